@@ -1,0 +1,127 @@
+/**
+ * What an engine gives back: the reduction of a log under a plan. Constant size: nothing here grows with rows or units,
+ * except the rejected rows, which go to a file.
+ */
+
+/** Counts per variant, in plan order. */
+export type ByVariant = readonly number[];
+
+export interface Reduction {
+  readonly engine: { readonly name: string; readonly version: string };
+  readonly inputs: readonly InputFile[];
+  /** Files named by `listed-in`, with the number of ids read. */
+  readonly lists: readonly InputFile[];
+  readonly rowsRead: number;
+  /** Every ledger line of DESIGN 7, in order, also with 0; the rows add up to rowsRead. */
+  readonly rowLines: readonly { readonly id: string; readonly rows: number }[];
+  readonly unitsSeen: number;
+  /** The units add up to unitsSeen. byVariant is null for not-enrolled and unknown-variant. */
+  readonly unitLines: readonly { readonly id: string; readonly units: number; readonly byVariant: ByVariant | null }[];
+  readonly facts: Facts;
+  /** One a metric, in plan order. */
+  readonly metrics: readonly MetricCells[];
+  /** Rejected rows by reason, most frequent first. */
+  readonly rejectReasons: readonly { readonly reason: string; readonly rows: number }[];
+}
+
+export interface InputFile {
+  /** Path relative to the plan's folder, with forward slashes. */
+  readonly name: string;
+  readonly bytes: number;
+  readonly sha256: string;
+  readonly rows: number;
+}
+
+/** What the soundness checks look at, beyond the ledger. */
+export interface Facts {
+  /** Enrolled units (past the line unknown-variant) by first variant, switched ones included. */
+  readonly enrolled: ByVariant;
+  /** Of the enrolled, units with a rejected row, with a duplicate row, and that switched. */
+  readonly withRejected: ByVariant;
+  readonly withDuplicate: ByVariant;
+  readonly switched: ByVariant;
+  /** Event ids of which copies differ in a column that the plan names, and of which copies differ in the unit. */
+  readonly duplicateIds: number;
+  readonly copiesThatDiffer: number;
+  readonly copiesOfOtherUnits: number;
+  /** Whether some entry of the log has an event-id. */
+  readonly hasEventId: boolean;
+  /** Values that rows name, commonest first, at most 200 each; null columns are not values. */
+  readonly events: readonly ValueCount[];
+  readonly variants: readonly ValueCount[];
+  /** Plan variants and events that no row has, whatever the length of the lists above. */
+  readonly missingEvents: readonly string[];
+  readonly missingVariants: readonly string[];
+  /** First and last enrolment of a counted unit, and the end of the log (DESIGN 4, rule 7); null without time. */
+  readonly firstEnrolledUs: bigint | null;
+  readonly lastEnrolledUs: bigint | null;
+  readonly logEndUs: bigint | null;
+}
+export interface ValueCount {
+  readonly value: string;
+  readonly rows: number;
+}
+
+/** One metric's cells over the analysed units. */
+export interface MetricCells {
+  readonly metric: string;
+  /** Per variant: analysed units without a value (only where a unit without rows is left out). */
+  readonly leftOut: ByVariant;
+  /** Counted rows (in follow-up, of analysed units) that hold no number; they add nothing. */
+  readonly countedRows: number;
+  readonly countedWithoutNumber: number;
+  /** The cap's value as an exact decimal, and the units it changed per variant. */
+  readonly cap: { readonly value: string; readonly units: ByVariant } | null;
+  /** The numerator, or the metric's only part, after the cap. */
+  readonly of: CellTable;
+  readonly ratio: { readonly per: CellTable; readonly score: ScoreTable } | null;
+}
+
+/**
+ * Cells of one metric part per variant and bucket: columns of equal length. u = (x - pivot) / scale;
+ * S_k = (sum of high_k) 2^-60 + (sum of low_k) 2^-120, k = 1..4 (DESIGN 5).
+ */
+export interface CellTable {
+  /** Exact decimal text with up to 9 places. */
+  readonly pivot: string;
+  /** A power of two. */
+  readonly scale: number;
+  readonly variant: readonly number[];
+  readonly bucket: readonly number[];
+  readonly n: readonly number[];
+  readonly high1: readonly bigint[];
+  readonly high2: readonly bigint[];
+  readonly high3: readonly bigint[];
+  readonly high4: readonly bigint[];
+  readonly low1: readonly bigint[];
+  readonly low2: readonly bigint[];
+  readonly low3: readonly bigint[];
+  readonly low4: readonly bigint[];
+  /** Exact sum of x, in 10^-9 of the metric's unit. */
+  readonly total: readonly bigint[];
+  /** Smallest and largest x, in 10^-9 of the metric's unit. */
+  readonly smallest: readonly bigint[];
+  readonly largest: readonly bigint[];
+}
+
+/**
+ * Cells of a ratio's score d = (a - R b) / mean(b), R and mean(b) of the unit's own arm. No pivot: the arm's mean of d
+ * is 0 by construction; the score that readers see is d + R.
+ */
+export interface ScoreTable {
+  readonly scale: number;
+  readonly variant: readonly number[];
+  readonly bucket: readonly number[];
+  readonly n: readonly number[];
+  readonly high1: readonly bigint[];
+  readonly high2: readonly bigint[];
+  readonly high3: readonly bigint[];
+  readonly high4: readonly bigint[];
+  readonly low1: readonly bigint[];
+  readonly low2: readonly bigint[];
+  readonly low3: readonly bigint[];
+  readonly low4: readonly bigint[];
+  /** Smallest and largest d, in the metric's unit. */
+  readonly smallest: readonly number[];
+  readonly largest: readonly number[];
+}

@@ -1,0 +1,165 @@
+/**
+ * The plan as the other rooms use it: defaults filled in, names in the code's style, exact numbers kept as text.
+ * The YAML's own shape is the schema in schema.ts; nothing but plan/ sees that.
+ */
+
+/** A plain decimal as text with percent resolved: "0.999", "500", "-1.5". Exact: a float would round it. */
+export type DecimalText = string;
+
+export interface Plan {
+  readonly experiment: string;
+  readonly question: string;
+  readonly unitCalled: { readonly one: string; readonly many: string };
+  readonly log: readonly LogSource[];
+  /** IANA name; local times and days are read in it. */
+  readonly timezone: string;
+  readonly enrolment: Enrolment;
+  /** In plan order; exactly one is the control. */
+  readonly variants: readonly Variant[];
+  readonly followUp: { readonly days: number; readonly incomplete: "exclude" | "keep" } | null;
+  readonly metrics: readonly Metric[];
+  readonly filters: readonly Filter[];
+  readonly decision: Decision;
+  readonly plannedUnits: number | null;
+  readonly texts: PlanTexts;
+  /**
+   * Every column of the log that the plan names, other than as time, event or variant, in the order of first mention
+   * in the YAML text (unit and event-id columns among them). It ends the canonical order of rows (DESIGN 4, rule 3).
+   */
+  readonly columns: readonly string[];
+  /** Of these, the ones whose values must be numbers: summed, or taken max, min, first or last of. */
+  readonly numericColumns: readonly string[];
+}
+
+/** One entry of `log`. */
+export interface LogSource {
+  /** Paths and globs as written, relative to the plan's folder. */
+  readonly files: readonly string[];
+  readonly columns: {
+    readonly unit: string;
+    readonly time: string | null;
+    readonly event: string | null;
+    readonly variant: string | null;
+    readonly eventId: string | null;
+  };
+}
+
+export interface Enrolment {
+  readonly event: string | null;
+  /** Microseconds since the epoch; from is inclusive, before exclusive. */
+  readonly fromUs: bigint | null;
+  readonly beforeUs: bigint | null;
+  /** As written in the plan, for the reader. */
+  readonly fromText: string | null;
+  readonly beforeText: string | null;
+  readonly inTwoVariants: "first" | "exclude";
+}
+
+export interface Variant {
+  readonly name: string;
+  readonly what: string | null;
+  readonly isControl: boolean;
+  readonly allocation: number;
+}
+
+export type Summary = "mean" | "proportion" | "ratio-of-totals";
+export type Role = "primary" | "secondary" | "guardrail";
+
+/** An effect size in the plan: a share of the control's level (0.05 = 5%), or in the metric's own unit. */
+export type Amount =
+  | { readonly kind: "relative"; readonly value: number }
+  | { readonly kind: "absolute"; readonly value: number };
+
+export interface Metric {
+  readonly name: string;
+  readonly role: Role;
+  readonly summary: Summary;
+  readonly of: Part;
+  /** The denominator of a ratio of totals, else null. */
+  readonly per: Part | null;
+  /** The unit of measurement, for the reader: "kr". */
+  readonly unitOfMeasure: string | null;
+  readonly goodIs: "higher" | "lower";
+  /** Primary only; null: any gain. */
+  readonly worthwhile: Amount | null;
+  readonly expected: Amount | null;
+  /** Guardrail only, and there never null. */
+  readonly margin: Amount | null;
+  readonly cap:
+    | { readonly kind: "quantile"; readonly q: DecimalText }
+    | { readonly kind: "at"; readonly at: DecimalText }
+    | null;
+  readonly withoutRows: "zero" | "leave-out";
+}
+
+/** What is taken of a unit's rows. A part with neither event nor where counts every row. */
+export interface Part {
+  readonly event: string | null;
+  readonly where: Where;
+  readonly aggregate: Aggregate;
+}
+export type Aggregate =
+  | { readonly kind: "count" }
+  | { readonly kind: "days" }
+  | { readonly kind: "sum" | "max" | "min" | "first" | "last"; readonly column: string };
+
+/** All tests must hold. An empty list holds for every row. */
+export type Where = readonly ColumnTest[];
+export type ColumnTest = { readonly column: string } & (
+  | { readonly kind: "in" | "not"; readonly values: readonly Scalar[] }
+  | { readonly kind: "above" | "below" | "at-least" | "at-most"; readonly value: DecimalText }
+  | { readonly kind: "missing"; readonly value: boolean }
+  | { readonly kind: "matches"; readonly patterns: readonly string[] }
+);
+/** A number in a `where` keeps its digits as the plan's text has them. */
+export type Scalar =
+  | { readonly kind: "text"; readonly text: string }
+  | { readonly kind: "number"; readonly value: DecimalText }
+  | { readonly kind: "boolean"; readonly value: boolean };
+
+export type Filter =
+  | { readonly name: string; readonly why: string | null; readonly drop: "rows"; readonly where: Where }
+  | {
+      readonly name: string;
+      readonly why: string | null;
+      readonly drop: "units";
+      readonly when: "at-enrolment" | "ever";
+      readonly where: Where;
+    }
+  | { readonly name: string; readonly why: string | null; readonly drop: "units"; readonly listedIn: string };
+
+export interface Decision {
+  readonly confidence: number;
+  readonly power: number;
+  readonly adoptWhen: "shown-better" | "shown-worthwhile";
+}
+
+/** Text for the reader, without effect on any number. */
+export interface PlanTexts {
+  readonly ended: string | null;
+  readonly owner: string | null;
+  readonly link: string | null;
+  readonly limits: string | null;
+  readonly notes: string | null;
+  readonly decided: {
+    readonly what: string;
+    readonly by: string | null;
+    readonly on: string | null;
+    readonly because: string | null;
+  } | null;
+}
+
+/**
+ * Something wrong in the plan, or between the plan and the log, as data; words are made in problems.ts.
+ * `path` leads to the place in the YAML (["metrics", 0, "of", "sum"]); `at` says whether the key or the value is meant.
+ */
+export interface Problem {
+  readonly path: readonly (string | number)[];
+  readonly at: "key" | "value";
+  /** What is wrong, one or two sentences, remedy included. */
+  readonly message: string;
+  /** The nearest known word, where one is near. */
+  readonly nearest?: string | undefined;
+  /** A further line for the reader, such as the list of columns the log has. */
+  readonly context?: string | undefined;
+}

@@ -1,0 +1,86 @@
+import type { CheckOutcome, Figure } from "../checks/types.ts";
+import type { DecisionWord, Zone } from "../decision/types.ts";
+import type { Role, Summary } from "../plan/types.ts";
+import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
+
+/** report.json: the contract of DESIGN 7. Numbers carry 12 significant digits; what does not exist is null. */
+export interface ReportJson {
+  readonly format: 1;
+  readonly experiment: string;
+  readonly conclusion: {
+    readonly decision: DecisionWord;
+    readonly variant: string | null;
+    readonly sentence: string;
+    readonly reasons: readonly string[];
+  };
+  readonly flow: FlowJson;
+  readonly checks: readonly CheckJson[];
+  readonly effects: readonly EffectJson[];
+  readonly subgroups: readonly never[];
+  readonly accrual: readonly never[];
+  readonly sensitivity: readonly never[];
+  readonly changes: null;
+  readonly provenance: ProvenanceJson;
+}
+
+export interface FlowJson {
+  readonly rowsRead: number;
+  readonly rows: readonly { readonly id: string; readonly line: string; readonly rows: number }[];
+  readonly unitsSeen: number;
+  readonly units: readonly {
+    readonly id: string;
+    readonly line: string;
+    readonly units: number;
+    readonly byVariant: Readonly<Record<string, number>> | null;
+  }[];
+  readonly analysed: Readonly<Record<string, number>>;
+  readonly metrics: readonly never[];
+}
+
+/** The check's own figures stand beside these keys. */
+export type CheckJson = {
+  readonly id: string;
+  readonly result: CheckOutcome;
+  readonly strong: boolean;
+  readonly sentence: string;
+  readonly remedy: string;
+  readonly parts: readonly ({
+    readonly about: string;
+    readonly result: CheckOutcome;
+    readonly sentence: string;
+  } & { readonly [figure: string]: Figure })[];
+} & { readonly [figure: string]: Figure };
+
+export interface EffectJson {
+  readonly metric: string;
+  readonly role: Role;
+  readonly summary: Summary;
+  readonly variant: string;
+  readonly control: string;
+  readonly arms: { readonly control: ArmFigures; readonly variant: ArmFigures };
+  readonly difference: Omit<Difference, "method"> & { readonly pAdjusted: number | null; readonly method: string };
+  readonly relative: Relative | null;
+  readonly adjusted: null;
+  readonly zone: Zone;
+  readonly power: { readonly detectable: number | null; readonly unitsForWorthwhile: number | null };
+  readonly normality: null;
+}
+
+export interface ProvenanceJson {
+  readonly version: string;
+  readonly plan: { readonly sha256: string; readonly text: string };
+  readonly inputs: readonly {
+    readonly name: string;
+    readonly bytes: number;
+    readonly sha256: string;
+    readonly rows: number;
+  }[];
+  /** Lists of ids named by listed-in: they decide who counts, so their fingerprints are kept too. */
+  readonly lists: readonly {
+    readonly name: string;
+    readonly bytes: number;
+    readonly sha256: string;
+    readonly rows: number;
+  }[];
+  readonly engine: { readonly name: string; readonly version: string };
+}
