@@ -1,6 +1,7 @@
-import type { CheckOutcome, Figure } from "../checks/types.ts";
-import type { DecisionWord, Zone } from "../decision/types.ts";
-import type { Role, Summary } from "../plan/types.ts";
+import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
+import type { Conclusion, DecisionWord, Effect, Zone } from "../decision/types.ts";
+import type { Reduction } from "../engine/types.ts";
+import type { Plan, Role, Summary } from "../plan/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
 
 /** report.json: the contract of DESIGN 7. Numbers carry 12 significant digits; what does not exist is null. */
@@ -83,4 +84,37 @@ export interface ProvenanceJson {
     readonly rows: number;
   }[];
   readonly engine: { readonly name: string; readonly version: string };
+}
+
+/** Everything a report is made of: it reads no clock, no file of the log and no path of the machine. */
+export interface ReportInputs {
+  readonly plan: Plan;
+  /** The plan file's text, verbatim. */
+  readonly planText: string;
+  readonly planSha256: string;
+  /** Of closeout. */
+  readonly version: string;
+  readonly reduction: Reduction;
+  readonly checks: readonly Check[];
+  /** One a metric and variant, in plan order. */
+  readonly effects: readonly Effect[];
+  readonly conclusion: Conclusion;
+}
+
+export interface ReportFiles {
+  readonly json: ReportJson;
+  readonly html: string;
+  /** What is written into the report's folder. */
+  readonly files: readonly ReportFile[];
+  /** The conclusion and a short table for stdout, plain lines without colour. */
+  readonly terminal: (paths: TerminalPaths) => string;
+}
+export interface ReportFile {
+  readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md";
+  readonly text: string;
+}
+/** Where the reader finds the files, as the terminal is to print it. */
+export interface TerminalPaths {
+  readonly report: string;
+  readonly summary: string;
 }

@@ -1,0 +1,111 @@
+import type { Check } from "../checks/types.ts";
+import type { Effect } from "../decision/types.ts";
+import type { ByVariant } from "../engine/types.ts";
+import type { Plan } from "../plan/types.ts";
+import { twelveDigits } from "./digits.ts";
+import { rowLine, unitLine } from "./ledger.ts";
+import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson } from "./types.ts";
+
+/** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
+export function reportJson(inputs: ReportInputs): ReportJson {
+  const { plan, reduction, conclusion } = inputs;
+  const report: ReportJson = {
+    format: 1,
+    experiment: plan.experiment,
+    conclusion: {
+      decision: conclusion.decision,
+      variant: conclusion.variant,
+      sentence: conclusion.sentence,
+      reasons: conclusion.reasons,
+    },
+    flow: flowJson(inputs),
+    checks: inputs.checks.map(checkJson),
+    effects: inputs.effects.map(effectJson),
+    subgroups: [],
+    accrual: [],
+    sensitivity: [],
+    changes: null,
+    provenance: {
+      version: inputs.version,
+      plan: { sha256: inputs.planSha256, text: inputs.planText },
+      inputs: reduction.inputs.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
+      lists: reduction.lists.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
+      engine: { name: reduction.engine.name, version: reduction.engine.version },
+    },
+  };
+  return twelveDigits(report);
+}
+
+function flowJson({ plan, reduction }: ReportInputs): FlowJson {
+  const analysed = reduction.unitLines.find((line) => line.id === "analysed")?.byVariant;
+  if (analysed === undefined || analysed === null) throw new Error("the unit ledger has no line analysed by variant");
+  return {
+    rowsRead: reduction.rowsRead,
+    rows: reduction.rowLines.map(({ id, rows }) => ({ id, line: rowLine(id, plan), rows })),
+    unitsSeen: reduction.unitsSeen,
+    units: reduction.unitLines.map(({ id, units, byVariant }) => ({
+      id,
+      line: unitLine(id, plan),
+      units,
+      byVariant: byVariant === null ? null : named(byVariant, plan),
+    })),
+    analysed: named(analysed, plan),
+    metrics: [],
+  };
+}
+
+function named(counts: ByVariant, { variants }: Plan): Record<string, number> {
+  if (counts.length !== variants.length) {
+    throw new Error(`the plan has ${variants.length} variants, the ledger counts ${counts.length}`);
+  }
+  return Object.fromEntries(variants.map(({ name }, i) => [name, counts[i] as number]));
+}
+
+function checkJson(check: Check): CheckJson {
+  const own = {
+    id: check.id,
+    result: check.result,
+    strong: check.strong,
+    sentence: check.sentence,
+    remedy: check.remedy,
+    parts: check.parts.map(({ about, result, sentence, figures }) =>
+      besideFigures({ about, result, sentence }, figures, `${check.id}, ${about}`),
+    ),
+  };
+  return besideFigures(own, check.figures, check.id) as CheckJson;
+}
+
+/** The figures stand beside the check's own keys; one that would overwrite a key is a mistake of the check. */
+function besideFigures<T extends object, F extends object>(own: T, figures: F, of: string): T & F {
+  const clash = Object.keys(figures).find((key) => Object.hasOwn(own, key));
+  if (clash !== undefined) throw new Error(`the check ${of} has a figure called "${clash}", which is a key of its own`);
+  return { ...own, ...figures };
+}
+
+function effectJson(effect: Effect): EffectJson {
+  const { contrast } = effect;
+  const { difference, relative } = contrast;
+  return {
+    metric: effect.metric,
+    role: effect.role,
+    summary: effect.summary,
+    variant: effect.variant,
+    control: effect.control,
+    arms: { control: contrast.control, variant: contrast.variant },
+    difference: {
+      estimate: difference.estimate,
+      standardError: difference.standardError,
+      low: difference.low,
+      high: difference.high,
+      z: difference.z,
+      p: difference.p,
+      pAdjusted: effect.pAdjusted,
+      method: difference.method,
+    },
+    relative: "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high },
+    adjusted: null,
+    zone: effect.zone,
+    power: { detectable: null, unitsForWorthwhile: null },
+    normality: null,
+  };
+}

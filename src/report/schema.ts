@@ -1,0 +1,107 @@
+import { z } from "zod";
+
+const outcome = z.enum(["pass", "caution", "fail"]);
+const figure: z.ZodType = z.lazy(() =>
+  z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
+);
+const count = z.number().min(0);
+const byVariant = z.record(z.string(), count);
+const numberOrNull = z.number().nullable();
+const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
+
+const arm = z.strictObject({
+  units: count,
+  mean: numberOrNull,
+  sd: numberOrNull,
+  skewness: numberOrNull,
+  kurtosis: numberOrNull,
+  total: numberOrNull,
+  smallest: numberOrNull,
+  largest: numberOrNull,
+});
+
+const effect = z.strictObject({
+  metric: z.string(),
+  role: z.enum(["primary", "secondary", "guardrail"]),
+  summary: z.enum(["mean", "proportion", "ratio-of-totals"]),
+  variant: z.string(),
+  control: z.string(),
+  arms: z.strictObject({ control: arm, variant: arm }),
+  difference: z
+    .strictObject({
+      estimate: numberOrNull,
+      standardError: numberOrNull,
+      low: numberOrNull,
+      high: numberOrNull,
+      z: numberOrNull,
+      p: numberOrNull,
+      pAdjusted: numberOrNull,
+      method: z.enum(["normal", "welch", "score"]),
+    })
+    .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise."),
+  relative: z
+    .strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull })
+    .nullable()
+    .describe("Variant over control minus 1. An end without a limit is null."),
+  adjusted: z.null(),
+  zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
+  power: z.strictObject({ detectable: numberOrNull, unitsForWorthwhile: numberOrNull }),
+  normality: z.null(),
+});
+
+const check = z
+  .object({
+    id: z.string(),
+    result: outcome,
+    strong: z.boolean(),
+    sentence: z.string(),
+    remedy: z.string(),
+    parts: z.array(z.object({ about: z.string(), result: outcome, sentence: z.string() }).catchall(figure)),
+  })
+  .catchall(figure)
+  .describe("The check's figures stand beside these keys.");
+
+const file = z.strictObject({ name: z.string(), bytes: count, sha256: fingerprint, rows: count });
+
+/** report.json (DESIGN 7) as a schema: keys of the contract are closed, only a check's figures are open. */
+export const reportSchema = z.strictObject({
+  format: z.literal(1),
+  experiment: z.string(),
+  conclusion: z.strictObject({
+    decision: z.enum(["adopt", "keep-control", "not-settled", "undecidable"]),
+    variant: z.string().nullable().describe("The adopted variant, else null."),
+    sentence: z.string(),
+    reasons: z.array(z.string()),
+  }),
+  flow: z.strictObject({
+    rowsRead: count,
+    rows: z
+      .array(z.strictObject({ id: z.string(), line: z.string(), rows: count }))
+      .describe("The rows add up to rowsRead."),
+    unitsSeen: count,
+    units: z
+      .array(z.strictObject({ id: z.string(), line: z.string(), units: count, byVariant: byVariant.nullable() }))
+      .describe("The units add up to unitsSeen."),
+    analysed: byVariant,
+    metrics: z.array(z.never()),
+  }),
+  checks: z.array(check),
+  effects: z.array(effect),
+  subgroups: z.array(z.never()),
+  accrual: z.array(z.never()),
+  sensitivity: z.array(z.never()),
+  changes: z.null(),
+  provenance: z.strictObject({
+    version: z.string(),
+    plan: z.strictObject({ sha256: fingerprint, text: z.string() }),
+    inputs: z.array(file),
+    lists: z.array(file),
+    engine: z.strictObject({ name: z.string(), version: z.string() }),
+  }),
+});
+
+/** The JSON Schema (draft 2020-12) that `closeout schema report` prints. */
+export function reportJsonSchema(): Record<string, unknown> {
+  const { $schema, ...rest } = z.toJSONSchema(reportSchema);
+  return { $schema, title: "closeout report.json", ...rest };
+}
