@@ -1,0 +1,23 @@
+// numbers
+
+export { chanceText, pText } from "./chance.ts";
+// nouns and days
+export { type Day, dateSpan, dateText } from "./dates.ts";
+// estimates with their intervals
+export {
+  type Comparative,
+  endInWords,
+  estimateInWords,
+  estimateSize,
+  HIGHER,
+  type Interval,
+  intervalInWords,
+  MORE,
+  type Scale,
+  signedEstimate,
+  signedInterval,
+} from "./interval.ts";
+export { capital, list, plural, quoted, small } from "./nouns.ts";
+export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
+export { percent, planPercent, signedPercent } from "./percent.ts";
+export { type Rates, rates, rateText } from "./rate.ts";

@@ -1,0 +1,30 @@
+import { count } from "./number.ts";
+
+/** "1 visitor", "1,204 visitors". */
+export function plural(n: number, one: string, many: string): string {
+  return `${count(n)} ${n === 1 ? one : many}`;
+}
+
+/** "a", "a and b", "a, b and c". */
+export function list(items: readonly string[], word = "and"): string {
+  if (items.length <= 1) return items[0] ?? "";
+  return `${items.slice(0, -1).join(", ")} ${word} ${items[items.length - 1]}`;
+}
+
+/** A name from the plan or the log inside a sentence, where it could be read as one of our own words. */
+export function quoted(name: string): string {
+  return `"${name}"`;
+}
+
+/** The first letter as a capital: the start of a sentence. */
+export function capital(text: string): string {
+  const [first = ""] = text;
+  return first.toUpperCase() + text.slice(first.length);
+}
+
+/** The first letter small, for a name inside a sentence; a name with further capitals stays as it is. */
+export function small(text: string): string {
+  const [first = ""] = text;
+  const rest = text.slice(first.length);
+  return /\p{Lu}/u.test(rest) || /^I\b/.test(text) ? text : first.toLowerCase() + rest;
+}
