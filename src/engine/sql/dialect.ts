@@ -1,0 +1,110 @@
+import type { DayRun, Step } from "../zone.ts";
+import { double, join, type Statement, sql } from "./sql.ts";
+
+/**
+ * What differs between engines. A stage holds no test of the engine's name; it asks the dialect.
+ * Every text argument is VARCHAR with missing as NULL.
+ */
+export interface Dialect {
+  /** Exact decimals: event values, and sums of them per unit. */
+  readonly valueType: Statement;
+  readonly sumType: Statement;
+  /** The value of a number's text, to 9 places, half away from zero; NULL when it is none or out of range. */
+  number(text: Statement): Statement;
+  /** Whether text is a number by the grammar of DESIGN 4.1; range aside. */
+  isNumber(text: Statement): Statement;
+  /** A number's text as an exact decimal for comparison; NULL when it is none. */
+  exact(text: Statement): Statement;
+  /** Microseconds on the clock that the text shows; NULL when unreadable. */
+  clockUs(text: Statement): Statement;
+  /** Microseconds to subtract where the text states an offset, else NULL: the clock is the plan's. */
+  statedOffsetUs(text: Statement): Statement;
+  /** 64-bit hash, for finding what may be equal; equality itself is tested on the text. */
+  hash(text: Statement): Statement;
+  /** 0..1023, the same on every engine: md5, and not the engine's own hash. */
+  bucket(unit: Statement): Statement;
+  /** Correctly rounded double of a decimal. */
+  toDouble(decimal: Statement): Statement;
+  /** floor(log2 |x|) of a decimal that is not 0. */
+  powerClass(decimal: Statement): Statement;
+  /** The value at the first (last) time among rows that hold one; ties go to the smallest value. */
+  firstValue(value: Statement, atUs: Statement, condition: Statement): Statement;
+  lastValue(value: Statement, atUs: Statement, condition: Statement): Statement;
+}
+
+const NUMBER = "[+-]?[0-9]+([.][0-9]+)?(e[+-]?[0-9]+)?";
+const DATE = "[0-9]{4}-[0-9]{2}-[0-9]{2}";
+const OFFSET = "Z|[+-]([01][0-9]|2[0-3])(:?[0-5][0-9])?";
+const TIME = `${DATE}([T ]([01][0-9]|2[0-3]):[0-5][0-9](:[0-5][0-9]([.][0-9]+)?)?(${OFFSET})?)?`;
+const EPOCH = "-?[0-9]{1,18}";
+
+// 2^53 nanos: up to here DuckDB divides two exact doubles, above it rounds twice, and the text is read instead.
+const EXACT_BELOW = 9_007_199;
+
+export const duckdb: Dialect = {
+  valueType: sql`DECIMAL(27, 9)`,
+  sumType: sql`DECIMAL(38, 9)`,
+  // Short values fit 64 bits; one cast to 128 bits costs a hundred times as much.
+  number: (text) => sql`CASE WHEN regexp_full_match(${text}, ${NUMBER})
+    THEN coalesce(CAST(try_cast(${text} AS DECIMAL(18, 9)) AS DECIMAL(27, 9)), try_cast(${text} AS DECIMAL(27, 9))) END`,
+  isNumber: (text) => sql`regexp_full_match(${text}, ${NUMBER})`,
+  exact: (text) =>
+    sql`CASE WHEN regexp_full_match(${text}, ${NUMBER}) THEN try_cast(${text} AS DECIMAL(38, 18)) END`,
+  clockUs: (text) => sql`CASE
+    WHEN regexp_full_match(${text}, ${TIME}) THEN epoch_us(try_cast(regexp_replace(${text}, ${`([T ].*)(${OFFSET})$`}, '\\1') AS TIMESTAMP))
+    WHEN regexp_full_match(${text}, ${EPOCH}) THEN CAST(${text} AS BIGINT) * CASE
+      WHEN length(ltrim(${text}, '-')) <= 11 THEN 1000000
+      WHEN length(ltrim(${text}, '-')) <= 14 THEN 1000
+      ELSE 1 END
+    END`,
+  statedOffsetUs: (text) => sql`CASE
+    WHEN regexp_full_match(${text}, ${EPOCH}) OR ends_with(${text}, 'Z') THEN 0
+    WHEN regexp_matches(${text}, ${`[T ].*[+-][0-9]{2}(:?[0-9]{2})?$`}) THEN ${offset(sql`regexp_extract(${text}, '[+-][0-9]{2}(:?[0-9]{2})?$')`)}
+    END`,
+  hash: (text) => sql`hash(${text})`,
+  bucket: (unit) => sql`CAST(md5_number(${unit}) & 1023 AS SMALLINT)`,
+  toDouble: (decimal) => sql`CASE WHEN abs(${decimal}) < ${EXACT_BELOW}
+    THEN CAST(${decimal} AS DOUBLE) ELSE CAST(CAST(${decimal} AS VARCHAR) AS DOUBLE) END`,
+  powerClass: (decimal) => sql`CAST(floor(log2(abs(CAST(${decimal} AS DOUBLE)))) AS INTEGER)`,
+  firstValue: (value, atUs, condition) =>
+    sql`arg_min(${value}, {'at': ${atUs}, 'value': ${value}}) FILTER (WHERE ${condition} AND ${value} IS NOT NULL)`,
+  lastValue: (value, atUs, condition) =>
+    sql`arg_max(${value}, {'at': ${atUs}, 'value': -${value}}) FILTER (WHERE ${condition} AND ${value} IS NOT NULL)`,
+};
+
+function offset(text: Statement): Statement {
+  const digits = sql`replace(${text}, ':', '')`;
+  const minutes = sql`CAST(substr(${digits}, 2, 2) AS BIGINT) * 60 + CASE WHEN length(${digits}) = 5 THEN CAST(substr(${digits}, 4, 2) AS BIGINT) ELSE 0 END`;
+  return sql`CASE WHEN ${digits} LIKE '-%' THEN -1 ELSE 1 END * 60000000 * (${minutes})`;
+}
+
+/** A step function of an instant as nested cases, halved at each level: eight comparisons for two centuries of changes. */
+function steps<T>(at: Statement, table: readonly Step<T>[], value: (step: Step<T>) => Statement): Statement {
+  const first = table[0];
+  if (first === undefined) throw new Error("a step table without a first step");
+  if (table.length === 1) return value(first);
+  const middle = table.length >> 1;
+  const split = table[middle];
+  if (split === undefined) throw new Error("a step table without a middle");
+  const early = steps(at, table.slice(0, middle), value);
+  return sql`CASE WHEN ${at} < ${split.from} THEN ${early} ELSE ${steps(at, table.slice(middle), value)} END`;
+}
+
+/** Microseconds to subtract from a local clock. */
+export function localOffset(clockUs: Statement, table: readonly Step<bigint>[]): Statement {
+  return steps(clockUs, table, (step) => sql`${step.value}`);
+}
+
+/** Local day (days since 1970-01-01) of an instant. */
+export function localDay(atUs: Statement, table: readonly Step<DayRun>[]): Statement {
+  return steps(atUs, table, ({ from, value }) =>
+    value.days === 1
+      ? sql`${value.first}`
+      : sql`${value.first} + least((${atUs} - ${from}) // 86400000000, ${value.days - 1})`,
+  );
+}
+
+/** A list of values, for IN. */
+export const valueList = (values: readonly string[]): Statement => join(values.map((value) => sql`${value}`), ", ");
+
+export { double };
