@@ -162,4 +162,6 @@ export interface Problem {
   readonly nearest?: string | undefined;
   /** A further line for the reader, such as the list of columns the log has. */
   readonly context?: string | undefined;
+  /** Start and end in the text, where no path leads: a fault of the YAML itself, the second of two equal keys. */
+  readonly span?: readonly [number, number] | undefined;
 }

@@ -1,0 +1,74 @@
+import { isAlias, isMap, isSeq } from "yaml";
+import { keyText, type Path, type YamlText } from "./yaml.ts";
+
+/** A place where the plan names a column of the log. */
+export interface Mention {
+  readonly name: string;
+  readonly path: Path;
+  /** A column of a `where` is a key, all others are values. */
+  readonly at: "key" | "value";
+  /** What `columns` of one entry of the log calls ours: it must be in every file of that entry. */
+  readonly role: "unit" | "time" | "event" | "variant" | "event-id" | null;
+  /** The values must be numbers. */
+  readonly isNumeric: boolean;
+}
+
+/** Every mention of a column, in the order of the YAML text. What is not a text is no mention; the schema reports it. */
+export function columnMentions(yaml: YamlText): readonly Mention[] {
+  const mentions: Mention[] = [];
+  const visit = (node: unknown, path: Path): void => {
+    const target = isAlias(node) ? node.resolve(yaml.document) : node;
+    if (path.length > DEEPEST) return;
+    if (isSeq(target)) target.items.forEach((item, i) => void visit(item, [...path, i]));
+    if (isMap(target)) {
+      for (const pair of target.items) {
+        const key = keyText(pair);
+        if (key === null) continue;
+        const inside = [...path, key];
+        if (isWhere(path)) mentions.push({ name: key, path: inside, at: "key", role: null, isNumeric: false });
+        visit(pair.value, inside);
+      }
+    }
+    const name = (target as { value?: unknown } | null)?.value;
+    if (typeof name === "string" && name !== "") {
+      const kind = kindOf(path);
+      if (kind !== null) mentions.push({ name, path, at: "value", ...kind });
+    }
+  };
+  visit(yaml.document.contents, []);
+  return mentions;
+}
+const DEEPEST = 12; // a column stands at most 5 deep; an alias could lead round in a circle
+
+/** The columns other than time, event and variant, each once, in the order of first mention (DESIGN 4, rule 3). */
+export function orderedColumns(mentions: readonly Mention[]): {
+  columns: readonly string[];
+  numericColumns: readonly string[];
+} {
+  const named = mentions.filter(({ role }) => role === null || role === "unit" || role === "event-id");
+  const columns = [...new Set(named.map(({ name }) => name))];
+  const numeric = new Set(named.filter(({ isNumeric }) => isNumeric).map(({ name }) => name));
+  return { columns, numericColumns: columns.filter((name) => numeric.has(name)) };
+}
+
+function isWhere(path: Path): boolean {
+  const [section, , key, inner] = path;
+  if (section === "filters") return path.length === 3 && key === "where";
+  return section === "metrics" && path.length === 4 && (key === "of" || key === "per") && inner === "where";
+}
+
+const ROLES = ["unit", "time", "event", "variant", "event-id"] as const;
+const NUMERIC = ["sum", "max", "min", "first", "last"];
+
+function kindOf(path: Path): Pick<Mention, "role" | "isNumeric"> | null {
+  const [section, , key, inner] = path;
+  if (section === "log" && path.length === 4 && key === "columns") {
+    const role = ROLES.find((name) => name === inner);
+    return role === undefined ? null : { role, isNumeric: false };
+  }
+  if (section === "metrics" && path.length === 4) {
+    if ((key === "of" || key === "per") && NUMERIC.includes(String(inner))) return { role: null, isNumeric: true };
+    if (key === "adjust-for" && inner === "column") return { role: null, isNumeric: true };
+  }
+  return section === "subgroups" && path.length === 2 ? { role: null, isNumeric: false } : null;
+}

@@ -1,0 +1,133 @@
+import {
+  type Document,
+  isAlias,
+  isMap,
+  isScalar,
+  isSeq,
+  LineCounter,
+  type Pair,
+  parseDocument,
+  type Scalar,
+  type YAMLError,
+} from "yaml";
+import { parseYamlNumber } from "./number.ts";
+import type { Problem } from "./types.ts";
+
+/** The plan's text, its YAML tree and its lines: what is needed to say where something stands. */
+export interface YamlText {
+  readonly text: string;
+  readonly document: Document.Parsed;
+  readonly lines: LineCounter;
+}
+export type Path = readonly (string | number)[];
+/** Start and end in the text, as offsets. */
+export type Span = readonly [number, number];
+
+/** Parses YAML 1.2 (core schema). What is not YAML comes back as problems; no structure is then to be trusted. */
+export function readYaml(text: string): { yaml: YamlText; problems: readonly Problem[]; isBroken: boolean } {
+  const lines = new LineCounter();
+  const document = parseDocument(text, { schema: "core", lineCounter: lines, prettyErrors: false });
+  const faults = [...document.errors, ...document.warnings];
+  return {
+    yaml: { text, document, lines },
+    problems: faults.map(yamlProblem),
+    isBroken: document.errors.some((fault) => fault.code !== "DUPLICATE_KEY"),
+  };
+}
+
+/** The tree as plain data. Keys are the text they are written in (`0123:` is "0123"); of two equal keys the first counts. */
+export function plainData(yaml: YamlText): { value: unknown; problems: readonly Problem[] } {
+  const problems: Problem[] = [];
+  let nodes = 0;
+  const plain = (node: unknown, path: Path, above: readonly unknown[]): unknown => {
+    nodes += 1;
+    const target = isAlias(node) ? node.resolve(yaml.document) : node;
+    if (above.includes(target) || nodes > MOST_NODES) {
+      problems.push({
+        path,
+        at: "value",
+        message: "This alias leads back to itself or repeats too much. Write it out.",
+      });
+      return null;
+    }
+    if (isSeq(target)) return target.items.map((item, i) => plain(item, [...path, i], [...above, target]));
+    if (isMap(target)) {
+      const mapping: Record<string, unknown> = Object.create(null); // no inherited names: a column may be "constructor"
+      for (const pair of target.items) {
+        const key = keyText(pair);
+        if (key === null || key === "__proto__") {
+          problems.push({ path, at: "key", message: "A key must be a text.", ...spanOfKey(pair) });
+        } else if (!(key in mapping)) {
+          mapping[key] = plain(pair.value, [...path, key], [...above, target]);
+        }
+      }
+      return mapping;
+    }
+    if (!isScalar(target)) return null;
+    if (typeof target.value === "number" && decimalText(target) === null) {
+      const message = `Write a number in decimal digits. If this is text, put it in quotes: "${target.source ?? ""}".`;
+      problems.push({ path, at: "value", message });
+    }
+    return target.value;
+  };
+  return { value: plain(yaml.document.contents, [], []), problems };
+}
+const MOST_NODES = 100_000; // a plan has hundreds; aliases of aliases can make billions
+
+/** The pair (or list item) at a path, as the tree has it; null where the path leaves the tree. */
+export function nodeAt(yaml: YamlText, path: Path): { key: Scalar | null; value: unknown } | null {
+  let found: { key: Scalar | null; value: unknown } = { key: null, value: yaml.document.contents };
+  for (const step of path) {
+    const node = isAlias(found.value) ? found.value.resolve(yaml.document) : found.value;
+    if (isSeq(node) && typeof step === "number" && step < node.items.length) {
+      found = { key: null, value: node.items[step] };
+    } else if (isMap(node)) {
+      const pair = node.items.find((item) => keyText(item) === step);
+      if (pair === undefined) return null;
+      found = { key: isScalar(pair.key) ? pair.key : null, value: pair.value };
+    } else {
+      return null;
+    }
+  }
+  return found;
+}
+
+/** The digits of the number at a path, exactly as the text has them, in canonical form. */
+export function decimalAt(yaml: YamlText, path: Path): string {
+  const value = nodeAt(yaml, path)?.value;
+  const node = isAlias(value) ? value.resolve(yaml.document) : value;
+  const decimal = isScalar(node) ? decimalText(node) : null;
+  if (decimal === null) throw new Error(`no number at ${path.join(", ")}`);
+  return decimal;
+}
+
+export function keyText(pair: Pair): string | null {
+  if (!isScalar(pair.key) || pair.key.value === null) return null;
+  return typeof pair.key.value === "string" ? pair.key.value : (pair.key.source ?? String(pair.key.value));
+}
+
+function decimalText(node: Scalar): string | null {
+  return parseYamlNumber(node.source ?? "");
+}
+
+function spanOfKey(pair: Pair): { span?: Span } {
+  const range = (pair.key as Scalar | null)?.range;
+  return range ? { span: [range[0], Math.max(range[1], range[0] + 1)] } : {};
+}
+
+function yamlProblem(fault: YAMLError): Problem {
+  return {
+    path: [],
+    at: "key",
+    message: YAML_WORDS[fault.code] ?? `This is not YAML: ${fault.message}.`,
+    span: fault.pos,
+  };
+}
+const YAML_WORDS: Partial<Record<YAMLError["code"], string>> = {
+  DUPLICATE_KEY: "This key stands here a second time. Keep one of the two.",
+  MULTIPLE_DOCS: "A plan is one YAML document. Remove this line and what follows it, or make it a file of its own.",
+  TAB_AS_INDENT: "A tab indents this line. YAML allows spaces only.",
+  BLOCK_AS_IMPLICIT_KEY: 'This line holds two keys. If it is text with a colon in it, put the text in quotes: "…: …".',
+  BAD_ALIAS: "This alias names no anchor of the plan.",
+  TAG_RESOLVE_FAILED: "A plan knows no YAML tags. Remove the word that begins with an exclamation mark.",
+};
