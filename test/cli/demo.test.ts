@@ -193,7 +193,7 @@ function analysed(rows: readonly WebRow[], desk: readonly { at: number; visitor:
   const seen = new Set<string>();
   const good = rows
     .filter((row) => !Number.isNaN(row.at) && row.visitor !== "" && /^\d*(\.\d+)?$/.test(row.fare))
-    .sort((a, b) => a.us - b.us)
+    .sort((a, b) => a.at - b.at)
     .filter((row) => !seen.has(row.id) && seen.add(row.id))
     .filter((row) => !row.visitor.startsWith("probe-") && !(row.event === "booking" && row.fare === "0"));
   const units = new Map<string, Unit | null>();
