@@ -1,0 +1,181 @@
+import type { ByVariant, CellTable, Reduction } from "../../src/engine/types.ts";
+import type { Plan } from "../../src/plan/types.ts";
+import { ascending, nanoOf, nanoText } from "./number.ts";
+import type { OracleFacts, OracleResult, UnitValue } from "./types.ts";
+
+/**
+ * What the oracle's result and an engine's reduction have in common, as plain JSON: the exact figures.
+ * (The power sums, which round, are compared in test/property/sums.ts.)
+ */
+export interface Outcome {
+  readonly rowsRead: number;
+  readonly rowLines: Readonly<Record<string, number>>;
+  readonly unitsSeen: number;
+  readonly unitLines: Readonly<Record<string, readonly [number, ByVariant | null]>>;
+  readonly facts: Readonly<Record<string, unknown>>;
+  readonly metrics: readonly MetricOutcome[];
+}
+
+export interface MetricOutcome {
+  readonly metric: string;
+  readonly leftOut: ByVariant;
+  readonly countedRows: number;
+  readonly countedWithoutNumber: number;
+  readonly cap: { readonly value: string; readonly units: ByVariant } | null;
+  /** One an arm, in plan order. */
+  readonly of: readonly ArmOutcome[];
+  readonly per: readonly ArmOutcome[] | null;
+  /** The same by variant and bucket, "0/517". */
+  readonly buckets: Readonly<Record<string, ArmOutcome>>;
+}
+
+/** Decimals as text, exact; null where there is no value. */
+export interface ArmOutcome {
+  readonly n: number;
+  readonly total: string;
+  readonly smallest: string | null;
+  readonly largest: string | null;
+}
+
+export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
+  return {
+    ...ledgerOf(result),
+    facts: factsOf(result.facts),
+    metrics: result.metrics.map((metric) => {
+      const per = metric.values.flatMap((value) => (value.per === null ? [] : [{ ...value, of: value.per }]));
+      const isRatio = plan.metrics.some(({ name, per: part }) => name === metric.metric && part !== null);
+      return {
+        metric: metric.metric,
+        leftOut: metric.leftOut,
+        countedRows: metric.countedRows,
+        countedWithoutNumber: metric.countedWithoutNumber,
+        cap:
+          metric.cap === null || metric.values.length === 0
+            ? null
+            : { value: nanoText(metric.cap.value), units: metric.cap.units },
+        of: armsOf(plan, metric.values),
+        per: isRatio ? armsOf(plan, per) : null,
+        buckets: Object.fromEntries(
+          [...new Set(metric.values.map(bucketKey))].map((key) => [
+            key,
+            armOf(metric.values.filter((value) => bucketKey(value) === key)),
+          ]),
+        ),
+      };
+    }),
+  };
+}
+
+export function outcomeOfEngine(plan: Plan, reduction: Reduction): Outcome {
+  return {
+    ...ledgerOf(reduction),
+    facts: factsOf(reduction.facts),
+    metrics: reduction.metrics.map((metric) => {
+      const cells = cellsOf(metric.of);
+      return {
+        metric: metric.metric,
+        leftOut: metric.leftOut,
+        countedRows: metric.countedRows,
+        countedWithoutNumber: metric.countedWithoutNumber,
+        cap:
+          metric.cap === null || cells.length === 0
+            ? null
+            : { value: nanoText(nanoOf(metric.cap.value)), units: metric.cap.units },
+        of: mergedArms(plan, cells),
+        per: metric.ratio === null ? null : mergedArms(plan, cellsOf(metric.ratio.per)),
+        buckets: Object.fromEntries(cells.map((cell) => [bucketKey(cell), merged([cell])])),
+      };
+    }),
+  };
+}
+
+function ledgerOf(
+  result: OracleResult | Reduction,
+): Pick<Outcome, "rowsRead" | "rowLines" | "unitsSeen" | "unitLines"> {
+  return {
+    rowsRead: result.rowsRead,
+    rowLines: Object.fromEntries(result.rowLines.map(({ id, rows }) => [id, rows])),
+    unitsSeen: result.unitsSeen,
+    unitLines: Object.fromEntries(
+      result.unitLines.map(({ id, units, byVariant }) => [id, [units, byVariant] as const]),
+    ),
+  };
+}
+
+function factsOf(facts: OracleFacts): Record<string, unknown> {
+  const instant = (us: bigint | null) => (us === null ? null : us.toString());
+  return {
+    enrolled: facts.enrolled,
+    withRejected: facts.withRejected,
+    withDuplicate: facts.withDuplicate,
+    switched: facts.switched,
+    duplicateIds: facts.duplicateIds,
+    copiesThatDiffer: facts.copiesThatDiffer,
+    copiesOfOtherUnits: facts.copiesOfOtherUnits,
+    missingEvents: [...facts.missingEvents].sort(),
+    missingVariants: [...facts.missingVariants].sort(),
+    firstEnrolledUs: instant(facts.firstEnrolledUs),
+    lastEnrolledUs: instant(facts.lastEnrolledUs),
+    logEndUs: instant(facts.logEndUs),
+  };
+}
+
+function armsOf(plan: Plan, values: readonly UnitValue[]): ArmOutcome[] {
+  return plan.variants.map((_, at) => armOf(values.filter(({ variant }) => variant === at)));
+}
+
+function armOf(values: readonly UnitValue[]): ArmOutcome {
+  return merged(values.map(({ of }) => ({ n: 1, total: of, smallest: of, largest: of })));
+}
+
+function bucketKey({ variant, bucket }: { readonly variant: number; readonly bucket: number }): string {
+  return `${variant}/${bucket}`;
+}
+
+interface Exact {
+  readonly n: number;
+  readonly total: bigint;
+  readonly smallest: bigint;
+  readonly largest: bigint;
+}
+
+function merged(groups: readonly Exact[]): ArmOutcome {
+  const smallest = groups.map((group) => group.smallest).sort(ascending)[0];
+  const largest = groups
+    .map((group) => group.largest)
+    .sort(ascending)
+    .at(-1);
+  return {
+    n: groups.reduce((sum, group) => sum + group.n, 0),
+    total: nanoText(groups.reduce((sum, group) => sum + group.total, 0n)),
+    smallest: smallest === undefined ? null : nanoText(smallest),
+    largest: largest === undefined ? null : nanoText(largest),
+  };
+}
+
+function cellsOf(table: CellTable): (Exact & { variant: number; bucket: number })[] {
+  return table.n.flatMap((n, at) =>
+    n === 0
+      ? []
+      : [
+          {
+            n,
+            variant: part(table.variant, at),
+            bucket: part(table.bucket, at),
+            total: part(table.total, at),
+            smallest: part(table.smallest, at),
+            largest: part(table.largest, at),
+          },
+        ],
+  );
+}
+
+function mergedArms(plan: Plan, cells: ReturnType<typeof cellsOf>): ArmOutcome[] {
+  return plan.variants.map((_, at) => merged(cells.filter(({ variant }) => variant === at)));
+}
+
+function part<T>(column: readonly T[], at: number): T {
+  const value = column[at];
+  if (value === undefined) throw new Error(`a cell table's columns differ in length: no row ${at} of ${column.length}`);
+  return value;
+}

@@ -1,0 +1,41 @@
+import { isMap, isScalar, isSeq, type Node } from "yaml";
+
+/** Columns that a plan names other than as time, event or variant, in the order of first mention in its text. */
+export interface NamedColumns {
+  readonly columns: readonly string[];
+  /** Of these, the ones that a metric sums or takes max, min, first or last of. */
+  readonly numericColumns: readonly string[];
+}
+
+const NUMERIC = ["sum", "max", "min", "first", "last"];
+
+export function namedColumns(root: Node | null): NamedColumns {
+  const mentions = mentionsIn(root, []);
+  const distinct = (found: readonly Mention[]) => [...new Set(found.map(({ column }) => column))];
+  return { columns: distinct(mentions), numericColumns: distinct(mentions.filter(({ numeric }) => numeric)) };
+}
+
+interface Mention {
+  readonly column: string;
+  readonly numeric: boolean;
+}
+
+function mentionsIn(node: Node | null, path: readonly string[]): Mention[] {
+  if (isSeq(node)) return (node.items as Node[]).flatMap((item) => mentionsIn(item, path));
+  if (!isMap(node)) return [];
+  return node.items.flatMap((pair) => {
+    const key = String((pair.key as { value?: unknown }).value);
+    const value = pair.value as Node | null;
+    if (key === "where") return keysOf(value).map((column) => ({ column, numeric: false }));
+    if (!isScalar(value)) return mentionsIn(value, [...path, key]);
+    const column = String(value.value);
+    const inside = path.at(-1);
+    if (inside === "columns" && (key === "unit" || key === "event-id")) return [{ column, numeric: false }];
+    if ((inside === "of" || inside === "per") && NUMERIC.includes(key)) return [{ column, numeric: true }];
+    return [];
+  });
+}
+
+function keysOf(node: Node | null): string[] {
+  return isMap(node) ? node.items.map((pair) => String((pair.key as { value?: unknown }).value)) : [];
+}

@@ -1,0 +1,78 @@
+import type { ByVariant, Facts } from "../../src/engine/types.ts";
+import type { Cell } from "./where.ts";
+
+/** One file of the log as text cells: what the oracle starts from. */
+export interface RawFile {
+  /** Its entry of the plan's `log`. */
+  readonly source: number;
+  readonly file: string;
+  readonly header: readonly string[];
+  readonly rows: readonly (readonly Cell[])[];
+  /** Rows that are there but cannot be read, such as one with a cell too many. */
+  readonly unreadable: number;
+}
+
+/** The ids of each `listed-in` filter, by the file's name in the plan. */
+export type Lists = ReadonlyMap<string, ReadonlySet<string>>;
+
+export type RejectReason = "no-unit" | "no-time" | "bad-time" | "not-a-number" | "out-of-range";
+
+/** A row that could be read. Where it ends is in the ledger tables. */
+export interface Row {
+  readonly source: number;
+  readonly unit: Cell;
+  readonly eventId: Cell;
+  readonly us: bigint | null;
+  readonly event: Cell;
+  readonly variant: Cell;
+  /** Place in the plan's list of variants; -1 for one that the plan lacks, null where none is named. */
+  readonly variantIndex: number | null;
+  readonly cell: (column: string) => Cell;
+  /** In 10^-9; null where the cell is missing. */
+  readonly number: (column: string) => bigint | null;
+  readonly rejected: RejectReason | null;
+}
+
+export type OracleFacts = Pick<
+  Facts,
+  | "enrolled"
+  | "withRejected"
+  | "withDuplicate"
+  | "switched"
+  | "duplicateIds"
+  | "copiesThatDiffer"
+  | "copiesOfOtherUnits"
+  | "missingEvents"
+  | "missingVariants"
+  | "firstEnrolledUs"
+  | "lastEnrolledUs"
+  | "logEndUs"
+>;
+
+/** One analysed unit's value of a metric, in 10^-9, after the cap. */
+export interface UnitValue {
+  readonly unit: string;
+  readonly variant: number;
+  readonly bucket: number;
+  readonly of: bigint;
+  /** A ratio's denominator. */
+  readonly per: bigint | null;
+}
+
+export interface OracleMetric {
+  readonly metric: string;
+  readonly leftOut: ByVariant;
+  readonly countedRows: number;
+  readonly countedWithoutNumber: number;
+  readonly cap: { readonly value: bigint; readonly units: ByVariant } | null;
+  readonly values: readonly UnitValue[];
+}
+
+export interface OracleResult {
+  readonly rowsRead: number;
+  readonly rowLines: readonly { readonly id: string; readonly rows: number }[];
+  readonly unitsSeen: number;
+  readonly unitLines: readonly { readonly id: string; readonly units: number; readonly byVariant: ByVariant | null }[];
+  readonly facts: OracleFacts;
+  readonly metrics: readonly OracleMetric[];
+}
