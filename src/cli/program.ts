@@ -1,0 +1,156 @@
+import { Command, CommanderError } from "commander";
+import { demo } from "./demo.ts";
+import type { CloseoutOptions, Library } from "./library.ts";
+import { report } from "./report.ts";
+import { schema } from "./schema.ts";
+import type { ExitStatus, Terminal } from "./terminal.ts";
+import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
+
+export interface Surroundings {
+  readonly terminal: Terminal;
+  readonly load: () => Promise<Library>;
+  readonly signal: AbortSignal;
+  readonly version: string;
+}
+
+/** Reads the arguments and runs the command. A mistake in them is status 2; anything unforeseen is thrown. */
+export async function run(argv: readonly string[], surroundings: Surroundings): Promise<ExitStatus> {
+  const { terminal } = surroundings;
+  let status: ExitStatus = 0;
+  const program = commands(surroundings, (given) => {
+    status = given;
+  });
+  try {
+    await program.parseAsync(argv, { from: "user" });
+    return status;
+  } catch (error) {
+    const usage = error instanceof CommanderError ? inOurWords(error, program, argv) : error;
+    if (usage === null) return error instanceof CommanderError && error.exitCode === 0 ? 0 : 2;
+    if (!(usage instanceof UsageError)) throw usage;
+    terminal.complain(usage.message);
+    return 2;
+  }
+}
+
+function commands({ terminal, load, signal, version }: Surroundings, end: (status: ExitStatus) => void): Command {
+  const program = new Command("closeout")
+    .description(
+      "Closes an A/B test: reads its event log and the plan written before it, and writes one decision report.",
+    )
+    .version(version, "--version", "print the version")
+    .helpOption("--help", "print this help")
+    .helpCommand("help [COMMAND]", "print the help of a command")
+    .exitOverride()
+    .configureOutput({
+      writeOut: (text) => terminal.print(text.trimEnd()),
+      writeErr: (text) => terminal.complain(text.trimEnd()),
+      outputError: () => {}, // said in our own words, by run
+    })
+    .usage("COMMAND …")
+    .addHelpText("after", AFTER_HELP);
+
+  program
+    .command("report")
+    .summary("write the decision report of a test")
+    .description(
+      "Applies the plan to its log and writes the decision report: report.html, report.json and what goes with them.",
+    )
+    .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
+    .usage("PLAN [options]")
+    .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string, options: RawOptions) => {
+      const read = readOptions(options, facts(program, "report"));
+      end(await report({ plan, options: read }, terminal, await load(), signal));
+    });
+
+  program
+    .command("demo")
+    .summary("try it: an invented test with its log, plan and report")
+    .description(
+      "Writes an invented ferry line's plan (with comments that explain it) and log, then the report on them.",
+    )
+    .argument("[DIR]", "where to write plan.yaml, data/ and report/", "out/demo")
+    .usage("[DIR] [options]")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (folder: string) => end(await demo(folder, terminal, await load(), signal)));
+
+  program
+    .command("schema")
+    .summary("print the JSON Schema of the plan or of report.json")
+    .description("Prints a JSON Schema. With the plan's, an editor completes and checks a plan while you write it.")
+    .argument("[OF]", "plan, or report for report.json", "plan")
+    .usage("[plan|report]")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (of: string) => {
+      if (of !== "plan" && of !== "report") {
+        throw wrongArguments(`There is no schema of "${of}".`, facts(program, "schema"));
+      }
+      end(schema(of, terminal, await load()));
+    });
+  return program;
+}
+
+const AFTER_HELP = `
+Examples:
+  closeout demo              an invented test in out/demo, to look around
+  closeout report plan.yaml  its report in out/ and the experiment's name
+
+Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments
+are wrong, or a file or column that they name is not there; 3 the log cannot be
+used; 1 a fault of closeout itself.`;
+
+interface RawOptions {
+  readonly out?: string;
+  readonly threads?: string;
+  readonly memory?: string;
+}
+
+function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptions, "out" | "threads" | "memory"> {
+  const problems: string[] = [];
+  if (raw.out?.trim() === "") problems.push("--out needs the name of a folder.");
+  if (raw.threads !== undefined && !/^[1-9]\d{0,3}$/.test(raw.threads)) {
+    problems.push(`--threads ${raw.threads}: expected a whole number, 1 or more.`);
+  }
+  if (raw.memory !== undefined && !/^\d+(\.\d+)?\s?[KMGT]i?B$/i.test(raw.memory)) {
+    problems.push(`--memory ${raw.memory}: expected a size with its unit, such as 500MB or 4GB.`);
+  }
+  if (problems.length > 0) throw wrongArguments(problems.join("\n"), command);
+  return {
+    ...(raw.out === undefined ? {} : { out: raw.out }),
+    ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
+    ...(raw.memory === undefined ? {} : { memory: raw.memory }),
+  };
+}
+
+/** Commander's complaint as ours; null where it has printed what was asked for, or the help in place of a complaint. */
+function inOurWords(error: CommanderError, program: Command, argv: readonly string[]): UsageError | null {
+  const all = program.commands.map((command) => facts(program, command.name()));
+  const first = argv.find((word) => !word.startsWith("-"));
+  const command = all.find((one) => one.name === first) ?? null;
+  // The word that is wrong stands in quotes in the message; nothing else of it is used.
+  const [, word = ""] = /'([^']*)'/.exec(error.message) ?? [];
+  switch (error.code) {
+    case "commander.unknownCommand":
+      return unknownCommand(word, all);
+    case "commander.unknownOption":
+      return unknownOption(word, command);
+    case "commander.optionMissingArgument":
+      return new UsageError(`${word.split(" ")[0]} needs a value: ${word.replace(/[<>]/g, "")}`);
+    case "commander.missingArgument":
+      return command && wrongArguments(`closeout ${command.name} needs ${word}.`, command);
+    case "commander.excessArguments":
+      return command && wrongArguments(`closeout ${command.name} was given too many names.`, command);
+    default:
+      return null;
+  }
+}
+
+function facts(program: Command, name: string): CommandFacts {
+  const command = program.commands.find((one) => one.name() === name);
+  if (command === undefined) throw new Error(`the command ${name} is not there`);
+  const options = [...command.options.map((option) => option.long ?? option.flags), "--help"];
+  return { name, usage: `${name} ${command.usage()}`, options };
+}

@@ -1,0 +1,24 @@
+import { withAccents } from "./accents.ts";
+import type { CloseoutOptions, Library } from "./library.ts";
+import type { ExitStatus, Terminal } from "./terminal.ts";
+
+export interface ReportArguments {
+  readonly plan: string;
+  readonly options: Pick<CloseoutOptions, "out" | "threads" | "memory">;
+}
+
+export async function report(
+  { plan, options }: ReportArguments,
+  terminal: Terminal,
+  library: Library,
+  signal: AbortSignal,
+): Promise<ExitStatus> {
+  const outcome = await library.closeout(plan, { ...options, progress: terminal.progress, signal });
+  terminal.settle();
+  if (outcome.status !== 0) {
+    terminal.complain(outcome.text);
+    return outcome.status;
+  }
+  terminal.print(withAccents(outcome.terminal, terminal));
+  return 0;
+}

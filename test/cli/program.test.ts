@@ -1,0 +1,193 @@
+import { mkdtemp, readdir, readFile, rm, writeFile } from "node:fs/promises";
+import { tmpdir } from "node:os";
+import { join } from "node:path";
+import { stripVTControlCharacters } from "node:util";
+import { afterEach, beforeEach, describe, expect, it } from "vitest";
+import { withAccents } from "../../src/cli/accents.ts";
+import type { CloseoutOptions, Library, Outcome } from "../../src/cli/library.ts";
+import { run } from "../../src/cli/program.ts";
+import { progressText } from "../../src/cli/progress.ts";
+import type { Terminal } from "../../src/cli/terminal.ts";
+
+const DONE: Outcome = { status: 0, terminal: "A test\n\nAdopt it.", folder: "out/a-test" };
+
+/** Runs the command line against a library that only remembers what it was asked. */
+async function command(argv: string[], outcome: Outcome | Error = DONE) {
+  const asked: { plan: string; options: CloseoutOptions }[] = [];
+  const [stdout, stderr]: [string[], string[]] = [[], []];
+  const terminal: Terminal = {
+    print: (text) => stdout.push(text),
+    complain: (text) => stderr.push(text),
+    progress: () => {},
+    settle: () => {},
+    bold: (text) => text,
+    dim: (text) => text,
+  };
+  const library: Library = {
+    closeout: async (plan, options) => {
+      asked.push({ plan, options });
+      if (outcome instanceof Error) throw outcome;
+      return outcome;
+    },
+    planJsonSchema: () => ({ title: "plan" }),
+    reportJsonSchema: () => ({ title: "report" }),
+  };
+  const signal = new AbortController().signal;
+  const status = await run(argv, { terminal, load: async () => library, signal, version: "1.2.3" });
+  return { status, stdout: stdout.join("\n"), stderr: stderr.join("\n"), asked };
+}
+
+describe("closeout report", () => {
+  it("hands the plan and the options to the library and prints what it says", async () => {
+    const { status, stdout, stderr, asked } = await command([
+      "report",
+      "a.yaml",
+      "--out",
+      "x",
+      "--threads",
+      "2",
+      "--memory",
+      "4GB",
+    ]);
+    expect([status, stdout, stderr]).toEqual([0, "A test\n\nAdopt it.", ""]);
+    expect(asked[0]).toMatchObject({ plan: "a.yaml", options: { out: "x", threads: 2, memory: "4GB" } });
+  });
+
+  it("leaves to the library what was not given", async () => {
+    const { asked } = await command(["report", "a.yaml"]);
+    expect(Object.keys(asked[0]?.options ?? {}).sort()).toEqual(["progress", "signal"]);
+  });
+
+  it.each([2, 3] as const)("prints problems to stderr alone and ends with the library's status %i", async (status) => {
+    const result = await command(["report", "a.yaml"], { status, text: "a.yaml has 1 mistake." });
+    expect([result.status, result.stdout, result.stderr]).toEqual([status, "", "a.yaml has 1 mistake."]);
+  });
+
+  it("throws on what nobody foresaw, for main to say as a fault of its own", async () => {
+    await expect(command(["report", "a.yaml"], new Error("units line up to 1 but 2 were enrolled"))).rejects.toThrow(
+      "line up",
+    );
+  });
+});
+
+describe("wrong arguments", () => {
+  it.each([
+    [["reprot", "a.yaml"], 'closeout has no command "reprot". Did you mean report?'],
+    [["plan.yaml"], 'closeout has no command "plan.yaml". Did you mean closeout report plan.yaml?'],
+    [["check", "a.yaml"], 'closeout has no command "check".\n'],
+    [["report"], "closeout report needs PLAN.\nUse it so: closeout report PLAN [options]"],
+    [["report", "a.yaml", "b.yaml"], "closeout report was given too many names."],
+    [["report", "a.yaml", "--thread", "2"], "closeout report has no option --thread. Did you mean --threads?"],
+    [["report", "a.yaml", "--thread=2"], "closeout report has no option --thread. Did you mean --threads?"],
+    [["demo", "report", "--ouch"], "closeout demo has no option --ouch."],
+    [["--verbose"], "closeout has no option --verbose."],
+    [["report", "a.yaml", "--out"], "--out needs a value: --out DIR"],
+    [["report", "a.yaml", "--threads", "none"], "--threads none: expected a whole number, 1 or more."],
+    [["report", "a.yaml", "--threads", "0"], "--threads 0: expected a whole number, 1 or more."],
+    [["report", "a.yaml", "--memory", "4"], "--memory 4: expected a size with its unit, such as 500MB or 4GB."],
+    [["schema", "log"], 'There is no schema of "log".\nUse it so: closeout schema [plan|report]'],
+  ])("closeout %j: status 2, on stderr alone, without asking the library", async (argv, message) => {
+    const { status, stdout, stderr, asked } = await command(argv);
+    expect(stderr).toContain(message);
+    expect([status, stdout, asked.length]).toEqual([2, "", 0]);
+  });
+
+  it("names all wrong option values at once", async () => {
+    const { stderr } = await command(["report", "a.yaml", "--threads", "-1", "--memory", "much"]);
+    expect(stderr).toMatch(/--threads -1: .*\n--memory much: /);
+  });
+
+  it("prints the help to stderr when there is no command at all", async () => {
+    const { status, stdout, stderr } = await command([]);
+    expect([status, stdout]).toEqual([2, ""]);
+    expect(stderr).toContain("closeout COMMAND");
+  });
+});
+
+describe("what is asked for", () => {
+  it("prints help to stdout with status 0, and only the commands that are there", async () => {
+    const { status, stdout, stderr } = await command(["--help"]);
+    expect([status, stderr]).toEqual([0, ""]);
+    expect(stdout.match(/^ {2}(\w+) /gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
+  });
+
+  it("prints the help of a command", async () => {
+    const { status, stdout } = await command(["report", "--help"]);
+    expect(status).toBe(0);
+    for (const option of ["--out <DIR>", "--threads <N>", "--memory <SIZE>", "--debug"])
+      expect(stdout).toContain(option);
+    expect((await command(["help", "report"])).stdout).toBe(stdout);
+  });
+
+  it("prints the version", async () => {
+    expect(await command(["--version"])).toMatchObject({ status: 0, stdout: "1.2.3", stderr: "" });
+  });
+
+  it("prints the plan's JSON Schema, or the report's", async () => {
+    expect(JSON.parse((await command(["schema"])).stdout)).toEqual({ title: "plan" });
+    expect(JSON.parse((await command(["schema", "plan"])).stdout)).toEqual({ title: "plan" });
+    expect(JSON.parse((await command(["schema", "report"])).stdout)).toEqual({ title: "report" });
+  });
+});
+
+describe("closeout demo", () => {
+  let folder: string;
+  beforeEach(async () => {
+    folder = await mkdtemp(join(tmpdir(), "closeout-demo-"));
+  });
+  afterEach(() => rm(folder, { recursive: true }));
+
+  it("writes the plan and its log, nothing else, and reports on them into report/", async () => {
+    const { status, asked } = await command(["demo", folder]);
+    expect(status).toBe(0);
+    expect(asked).toMatchObject([{ plan: join(folder, "plan.yaml"), options: { out: join(folder, "report") } }]);
+    const plan = await readFile(join(folder, "plan.yaml"), "utf8");
+    expect(plan).toBe(await readFile(new URL("../../fixtures/demo/plan.yaml", import.meta.url), "utf8"));
+    expect((await readdir(folder, { recursive: true })).sort()).toEqual([
+      "data",
+      "data/load_test_ids.csv",
+      "data/support.ndjson",
+      "data/web-2026-02-23.csv.gz",
+      "data/web-2026-03-02.csv.gz",
+      "data/web-2026-03-09.csv.gz",
+      "data/web-2026-03-16.csv.gz",
+      "plan.yaml",
+    ]);
+  });
+
+  it("does not overwrite a plan that is not its own", async () => {
+    await writeFile(join(folder, "plan.yaml"), "experiment: mine\n");
+    const { status, stderr, asked } = await command(["demo", folder]);
+    expect([status, asked.length]).toEqual([2, 0]);
+    expect(stderr).toContain(`${join(folder, "plan.yaml")} is not the demo's plan, or was changed since.`);
+    expect(await readdir(folder)).toEqual(["plan.yaml"]);
+  });
+});
+
+describe("the terminal", () => {
+  const text = [
+    "Fare calendar",
+    "Adopt the calendar.\n13.2 of 100 visitors booked.",
+    "           list  calendar\nBooked    12.0%     13.2%",
+    "Data     12 checks passed\nReport   out/x/report.html",
+  ].join("\n\n");
+
+  it("adds accents to the conclusion, the table's head and the last labels, and changes no word", () => {
+    const accents = {
+      bold: (words: string) => `\x1b[1m${words}\x1b[22m`,
+      dim: (words: string) => `\x1b[2m${words}\x1b[22m`,
+    };
+    const shown = withAccents(text, accents);
+    expect(stripVTControlCharacters(shown)).toBe(text);
+    expect(shown).toContain("\x1b[1mAdopt the calendar.\x1b[22m\n13.2");
+    expect(shown).toContain("\x1b[2m           list  calendar\x1b[22m");
+    expect(shown).toContain("\x1b[2mReport\x1b[22m   out");
+  });
+
+  it("says what is known of the progress, and nothing else", () => {
+    expect(progressText({ stage: "reading rows", rows: 1_204_000, share: 0.999 })).toBe(
+      "reading rows  1,204,000 rows  99%",
+    );
+    expect(progressText({ stage: "cells", rows: 0, share: null })).toBe("cells");
+  });
+});
