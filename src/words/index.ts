@@ -12,6 +12,7 @@ export {
   HIGHER,
   type Interval,
   intervalInWords,
+  intervalSizes,
   MORE,
   type Scale,
   signedEstimate,

@@ -77,6 +77,18 @@ export function intervalInWords(
   }
 }
 
+/**
+ * For "fell by 3.1% (5.0% to 1.2%)": the sizes alone, in the order of the ends, where the whole interval lies on the
+ * estimate's side; null where it does not, for then the sizes alone would mislead.
+ */
+export function intervalSizes(interval: Interval, scale: Scale, marks: readonly number[] = []): string | null {
+  const { estimate, low, high } = interval;
+  if (low === null || high === null || estimate === 0) return null;
+  if (estimate > 0 ? low < 0 : high > 0) return null;
+  const write = writer(interval, scale, marks);
+  return `${write.size(low)} to ${write.last(write.size(high))}`;
+}
+
 /** One end of the interval, in the digits of the whole: "13.7% more". Null ends have no text. */
 export function endInWords(
   interval: Interval,

@@ -21,13 +21,19 @@ export function number(value: number): string {
   return Number.isInteger(value) ? fixed(value, 0) : fixed(value, decimalsOf(value));
 }
 
-/** Figures that are read side by side: all with as many places as the smallest of them needs for four digits. */
+/**
+ * Figures that are read side by side: all with as many places as the smallest of them needs for four digits, and more
+ * where two that differ would read alike.
+ */
 export function alike(values: readonly number[]): string[] {
   if (values.every(Number.isInteger)) return values.map((value) => fixed(value, 0));
   const sizes = values.filter((value) => value !== 0).map(decimalsOf);
   // a figure a thousand times smaller than its neighbour does not lend it seven places
-  const decimals = Math.min(Math.max(...sizes), Math.min(...sizes) + 3);
-  return values.map((value) => fixed(value, decimals));
+  const first = Math.min(Math.max(...sizes), Math.min(...sizes) + 3);
+  const texts = (decimals: number) => values.map((value) => fixed(value, decimals));
+  let decimals = first;
+  while (decimals < first + 6 && new Set(texts(decimals)).size < new Set(values).size) decimals++;
+  return texts(decimals);
 }
 
 /** A whole number of rows or units. */

@@ -6,6 +6,7 @@ import {
   estimateSize,
   HIGHER,
   intervalInWords,
+  intervalSizes,
   MORE,
   type Scale,
   signedEstimate,
@@ -64,6 +65,15 @@ describe("an interval in words", () => {
     expect(estimateSize(fares, KRONER)).toBe("2.0 kr");
     expect(endInWords(fares, "high", KRONER, HIGHER)).toBe("0.3 kr higher");
     expect(endInWords({ ...fares, low: null }, "low", KRONER, HIGHER)).toBeNull();
+  });
+});
+
+describe("the sizes of an interval", () => {
+  it("stand alone where the whole interval is on one side", () => {
+    expect(intervalSizes({ estimate: -0.031, low: -0.05, high: -0.012 }, PERCENT)).toBe("5.0% to 1.2%");
+    expect(intervalSizes({ estimate: 14, low: 8, high: 20 }, KRONER)).toBe("8.0 to 20.0 kr");
+    expect(intervalSizes(either, PERCENT)).toBeNull();
+    expect(intervalSizes({ ...gain, high: null }, PERCENT)).toBeNull();
   });
 });
 

@@ -35,6 +35,7 @@ describe("numbers", () => {
     expect(alike([3, 4])).toEqual(["3", "4"]);
     expect(alike([0, 0.5])).toEqual(["0.0000", "0.5000"]);
     expect(alike([1234.5, 0.0000123])).toEqual(["1,234.500", "0.000"]);
+    expect(alike([1234.52, 1234.91])).toEqual(["1,234.5", "1,234.9"]);
   });
 
   it("has no minus before what rounds to zero, and no plus either", () => {
