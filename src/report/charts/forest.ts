@@ -1,0 +1,157 @@
+import type { TopLevelSpec } from "vega-lite";
+import type { Relative } from "../../stats/types.ts";
+import { type LineStyle, theme } from "./theme.ts";
+
+/** One contrast of the forest plot, on the relative scale (0.05 = 5%). */
+export interface ForestRow {
+  readonly relative: Relative;
+  /** The worthwhile effect or the margin, with its sign: where the tick stands. */
+  readonly mark: number | null;
+  /** Rows for information do not stretch the axis beyond twice what the others need. */
+  readonly decides: boolean;
+  readonly style: LineStyle;
+}
+
+/** The axis that all rows share. */
+export interface ForestAxis {
+  readonly low: number;
+  readonly high: number;
+  readonly ticks: readonly number[];
+}
+
+type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
+
+const WIDTH = 300;
+/** Far taller than a row: the row's cell cuts it, so that the zero line runs through whatever the row's height. */
+const HEIGHT = 400;
+const MIDDLE = HEIGHT / 2;
+const TICK = 9;
+const SQUARE = 64;
+const AXIS_HEIGHT = 24;
+const MARGIN = 0.05;
+
+/** From the rows that decide: every estimate, bounded end and mark, zero always among them. */
+export function forestAxis(rows: readonly ForestRow[]): ForestAxis {
+  const deciding = rows.filter((row) => row.decides);
+  const [low, high] = extent(deciding.length === 0 ? rows : deciding);
+  const [lowest, highest] = extent(rows);
+  const room = high - low || highest - lowest || 0.1;
+  return withTicks(Math.max(lowest, low - room / 2), Math.min(highest, high + room / 2));
+}
+
+function extent(rows: readonly ForestRow[]): [number, number] {
+  const points = rows.flatMap(({ relative, mark }) => [relative.low, relative.estimate, relative.high, mark]);
+  const known = [0, ...points.filter((point) => point !== null)];
+  return [Math.min(...known), Math.max(...known)];
+}
+
+function withTicks(from: number, to: number): ForestAxis {
+  const room = to - from || 0.02;
+  const low = from - MARGIN * room;
+  const high = to + MARGIN * room;
+  const step = roundStep((high - low) / 5);
+  const first = Math.ceil(low / step);
+  const last = Math.floor(high / step);
+  const ticks = Array.from({ length: last - first + 1 }, (_, i) => Number(((first + i) * step).toPrecision(12)));
+  return { low, high, ticks };
+}
+
+/** The next step of 1, 2, 2.5 or 5 times a power of ten. */
+function roundStep(size: number): number {
+  const power = 10 ** Math.floor(Math.log10(size));
+  const factor = [1, 2, 2.5, 5].find((candidate) => candidate * power >= size * 0.999) ?? 10;
+  return factor * power;
+}
+
+/** One row's drawing: zero line, tick, interval as a thin line, estimate as a square. `row` null: the zero line alone. */
+export function forestStrip(row: ForestRow | null, axis: ForestAxis): TopLevelSpec {
+  const zero: Layer = { mark: { type: "rule", color: theme.rule, strokeWidth: 1 }, encoding: { x: at(0, axis) } };
+  return { ...frame(HEIGHT), layer: [zero, ...(row === null ? [] : rowMarks(row, axis))] };
+}
+
+function rowMarks({ relative, mark, style }: ForestRow, axis: ForestAxis): Layer[] {
+  const inside = (point: number) => point >= axis.low && point <= axis.high;
+  const stub = (axis.high - axis.low) / 50;
+  // an end without a limit, or beyond the axis, runs to the frame
+  const from = Math.min(Math.max(relative.low ?? axis.low, axis.low), axis.high - stub);
+  const to = Math.max(Math.min(relative.high ?? axis.high, axis.high), axis.low + stub);
+  const line: Layer = {
+    mark: { type: "rule", color: theme.ink, strokeWidth: 1.5, strokeDash: [...style.dash] },
+    encoding: { x: at(from, axis), x2: { datum: to }, y: { value: MIDDLE } },
+  };
+  const marks: Layer[] = [line];
+  if (mark !== null && inside(mark)) {
+    marks.unshift({
+      mark: { type: "rule", color: theme.ink, strokeWidth: 1.5 },
+      encoding: { x: at(mark, axis), y: { value: MIDDLE - TICK }, y2: { value: MIDDLE + TICK } },
+    });
+  }
+  if (inside(relative.estimate)) {
+    marks.push({
+      mark: {
+        type: "point",
+        shape: "square",
+        size: SQUARE,
+        filled: true,
+        opacity: 1,
+        color: style.fill,
+        stroke: theme.ink,
+        strokeWidth: 1,
+      },
+      encoding: { x: at(relative.estimate, axis), y: { value: MIDDLE } },
+    });
+  }
+  return marks;
+}
+
+function at(datum: number, axis: ForestAxis) {
+  return { datum, type: "quantitative", axis: null, title: null, scale: scaleOf(axis) } as const;
+}
+function scaleOf(axis: ForestAxis) {
+  return { domain: [axis.low, axis.high], zero: false, nice: false };
+}
+
+/** The axis below the rows, in percent of the control's level; `label` writes a tick. */
+export function forestScale(axis: ForestAxis, label: (tick: number) => string): TopLevelSpec {
+  const labels = Object.fromEntries(axis.ticks.map((tick) => [String(tick), label(tick)]));
+  return {
+    ...frame(AXIS_HEIGHT),
+    mark: { type: "rule", color: theme.rule, strokeWidth: 1 },
+    encoding: {
+      y: { value: 0 },
+      y2: { value: 0 },
+      x: {
+        datum: 0,
+        type: "quantitative",
+        scale: scaleOf(axis),
+        axis: {
+          orient: "bottom",
+          offset: 1 - AXIS_HEIGHT,
+          values: [...axis.ticks],
+          labelExpr: `${JSON.stringify(labels)}[toString(datum.value)]`,
+          title: null,
+          grid: false,
+          labelFont: theme.font,
+          labelFontSize: theme.letters,
+          labelColor: theme.quiet,
+          labelOverlap: false,
+          domainColor: theme.rule,
+          tickColor: theme.rule,
+        },
+      },
+    },
+  };
+}
+
+function frame(height: number) {
+  return {
+    $schema: "https://vega.github.io/schema/vega-lite/v6.json",
+    width: WIDTH,
+    height,
+    padding: 0,
+    autosize: "none",
+    background: "transparent",
+    data: { values: [{}] },
+    config: { aria: false, view: { stroke: null } },
+  } as const;
+}

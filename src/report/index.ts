@@ -1,0 +1,33 @@
+import { effectsCsv } from "./csv.ts";
+import { reportJson } from "./json.ts";
+import { page } from "./page.ts";
+import { renderPage } from "./render.ts";
+import { summaryMd } from "./summary.ts";
+import { terminalText } from "./terminal.ts";
+import type { ReportFiles, ReportInputs } from "./types.ts";
+
+// the report's parts, for tests and for whoever needs one alone
+export { effectsCsv } from "./csv.ts";
+export { reportJson } from "./json.ts";
+export { reportJsonSchema } from "./schema.ts";
+export { summaryMd } from "./summary.ts";
+export { terminalText } from "./terminal.ts";
+// what goes in and what comes out
+export type { ReportFile, ReportFiles, ReportInputs, ReportJson, TerminalPaths } from "./types.ts";
+
+/** The report's files as text, and its text for a terminal. Writes nothing: whoever calls it owns the folder. */
+export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {
+  const json = reportJson(inputs);
+  const html = renderPage(await page(inputs));
+  return {
+    json,
+    html,
+    files: [
+      { name: "report.html", text: html },
+      { name: "report.json", text: `${JSON.stringify(json, null, 2)}\n` },
+      { name: "effects.csv", text: effectsCsv(json.effects) },
+      { name: "summary.md", text: summaryMd(inputs) },
+    ],
+    terminal: (paths) => terminalText(inputs, paths),
+  };
+}

@@ -1,0 +1,58 @@
+import { controlOf, whenText } from "./plan-words.ts";
+import { type ChecksSection, checksSection } from "./sections/checks.ts";
+import { type CountedSection, countedSection } from "./sections/counted.ts";
+import { type DecisionSection, decisionSection } from "./sections/decision.ts";
+import { type MethodsSection, methodsSection } from "./sections/methods.ts";
+import { type MetricSection, metricSections } from "./sections/metrics.ts";
+import { powerParagraphs } from "./sections/power.ts";
+import type { ReportInputs } from "./types.ts";
+
+/** All that the templates print: words and drawings, no figure is computed past this point. */
+export interface Page {
+  readonly title: string;
+  readonly experiment: string;
+  readonly question: string;
+  readonly when: string;
+  readonly version: string;
+  readonly undecidable: boolean;
+  readonly control: string;
+  readonly confidence: string;
+  readonly contents: readonly { readonly number: number; readonly id: string; readonly title: string }[];
+  readonly decision: DecisionSection;
+  readonly checks: ChecksSection;
+  readonly counted: CountedSection;
+  readonly metrics: readonly MetricSection[];
+  readonly power: readonly string[];
+  readonly methods: MethodsSection;
+}
+
+/** Numbers are fixed (DESIGN 8): a first report has no section 2. */
+const CONTENTS = [
+  { number: 1, id: "decision", title: "Decision" },
+  { number: 3, id: "trust", title: "Can the data be trusted?" },
+  { number: 4, id: "counted", title: "Who was counted" },
+  { number: 5, id: "metrics", title: "Each measure" },
+  { number: 6, id: "power", title: "Power and the next test" },
+  { number: 7, id: "methods", title: "Methods, sources, cautions" },
+] as const;
+
+export async function page(inputs: ReportInputs): Promise<Page> {
+  const { plan, reduction, checks, effects, conclusion } = inputs;
+  return {
+    title: `${plan.experiment}: ${conclusion.sentence}`,
+    experiment: plan.experiment,
+    question: plan.question,
+    when: whenText(plan, reduction),
+    version: inputs.version,
+    undecidable: conclusion.decision === "undecidable",
+    control: controlOf(plan).name,
+    confidence: `${Number((plan.decision.confidence * 100).toPrecision(12))}%`,
+    contents: CONTENTS,
+    decision: await decisionSection(inputs),
+    checks: checksSection(checks),
+    counted: countedSection(plan, reduction),
+    metrics: metricSections(plan, reduction, effects),
+    power: powerParagraphs(plan, reduction),
+    methods: methodsSection(inputs),
+  };
+}

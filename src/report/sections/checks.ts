@@ -1,0 +1,123 @@
+import type { Check, CheckOutcome, Figure } from "../../checks/types.ts";
+import { capital, list, number, plural } from "../../words/index.ts";
+
+/** Section 3: can the data be trusted? Failed checks first, then cautions, the strong ones before the others. */
+export interface ChecksSection {
+  readonly tally: string;
+  readonly open: readonly CheckText[];
+  readonly passed: readonly CheckText[];
+}
+export interface CheckText {
+  readonly id: string;
+  readonly title: string;
+  /** "failed", "strong caution", "caution", "passed". */
+  readonly outcome: string;
+  readonly sentence: string;
+  readonly remedy: string;
+  readonly parts: readonly { readonly about: string; readonly outcome: string; readonly sentence: string }[];
+  readonly figures: readonly { readonly name: string; readonly value: string }[];
+}
+
+const TITLES: Readonly<Record<string, string>> = {
+  allocation: "Groups of the planned size",
+  "allocation-by-day": "Groups of the planned size on every day",
+  "allocation-by-level": "Groups of the planned size in every subgroup",
+  exits: "The same share of each group left",
+  rejected: "Rows that could not be read",
+  duplicates: "Rows that came twice",
+  switched: "Seen in two variants",
+  "unknown-variants": "Variants that the plan does not name",
+  gaps: "Hours without rows",
+  span: "Rows outside the main period",
+  "follow-up": "Followed to the end",
+  balance: "Groups alike before enrolment",
+  filters: "Filters",
+  "never-occurs": "Events and variants occur in the log",
+  weeks: "Whole weeks",
+  "stopped-early": "Planned size reached",
+  "one-unit": "No single value rules the result",
+  normality: "Normal approximation",
+  "without-rows": "Left out for want of a value",
+  denominator: "Denominator alike in both groups",
+  "plan-changed": "Plan unchanged",
+};
+
+const RANK = (check: Check) => (check.result === "fail" ? 0 : check.strong ? 1 : check.result === "caution" ? 2 : 3);
+
+export function checksSection(checks: readonly Check[]): ChecksSection {
+  const ordered = checks.toSorted((a, b) => RANK(a) - RANK(b));
+  return {
+    tally: tallyText(checks),
+    open: ordered.filter((check) => check.result !== "pass").map(checkText),
+    passed: ordered.filter((check) => check.result === "pass").map(checkText),
+  };
+}
+
+/** The check that matters most: the first that failed, else the first strong caution, else the first caution. */
+export function mostImportant(checks: readonly Check[]): Check | null {
+  const [first] = checks.filter((check) => check.result !== "pass").toSorted((a, b) => RANK(a) - RANK(b));
+  return first ?? null;
+}
+
+/** "12 checks passed, 1 caution", "1 check failed, 11 passed, 1 caution". */
+export function tallyText(checks: readonly Check[]): string {
+  const count = (result: CheckOutcome) => checks.filter((check) => check.result === result).length;
+  const [failed, cautions, passed] = [count("fail"), count("caution"), count("pass")];
+  if (checks.length === 0) return "No check was made";
+  const parts = [
+    ...(failed > 0 ? [`${plural(failed, "check", "checks")} failed`] : []),
+    failed > 0 ? `${passed} passed` : `${plural(passed, "check", "checks")} passed`,
+    ...(cautions > 0 ? [plural(cautions, "caution", "cautions")] : []),
+  ];
+  return parts.join(", ");
+}
+
+function checkText(check: Check): CheckText {
+  return {
+    id: check.id,
+    title: TITLES[check.id] ?? capital(check.id.replaceAll("-", " ")),
+    outcome: outcomeText(check.result, check.strong),
+    sentence: check.sentence,
+    remedy: check.remedy,
+    parts: check.parts.map(({ about, result, sentence }) => ({ about, outcome: outcomeText(result, false), sentence })),
+    figures: figureTexts([...Object.entries(check.figures)], ""),
+  };
+}
+
+function outcomeText(result: CheckOutcome, strong: boolean): string {
+  if (result === "caution") return strong ? "strong caution" : "caution";
+  return result === "pass" ? "passed" : "failed";
+}
+
+/** A check's figures as name and value, nested ones with their path: "counts, calendar". */
+function figureTexts(entries: readonly (readonly [string, Figure])[], path: string): { name: string; value: string }[] {
+  return entries.flatMap(([key, figure]) => {
+    // names below the first level are variants, filters, days: the plan's or the log's own text
+    const name = path === "" ? spaced(key) : `${path}, ${key}`;
+    if (isRecord(figure)) return figureTexts(Object.entries(figure), name);
+    if (Array.isArray(figure)) {
+      if (figure.every((item) => typeof item !== "object"))
+        return [{ name, value: list(figure.map(figureText)) || "none" }];
+      return figureTexts(
+        figure.map((item, i) => [String(i + 1), item] as const),
+        name,
+      );
+    }
+    return [{ name, value: figureText(figure) }];
+  });
+}
+
+function isRecord(figure: Figure): figure is { readonly [name: string]: Figure } {
+  return typeof figure === "object" && figure !== null && !Array.isArray(figure);
+}
+
+function figureText(figure: Figure): string {
+  if (typeof figure === "number")
+    return Math.abs(figure) < 1e-4 && figure !== 0 ? figure.toExponential(2) : number(figure);
+  if (typeof figure === "boolean") return figure ? "yes" : "no";
+  return figure === null ? "does not exist" : String(figure);
+}
+
+function spaced(key: string): string {
+  return key.replace(/([a-z])([A-Z])/g, (_, before, letter) => `${before} ${letter.toLowerCase()}`);
+}

@@ -1,0 +1,167 @@
+import type { Effect } from "../../decision/types.ts";
+import type { Plan, Role } from "../../plan/types.ts";
+import type { Relative } from "../../stats/types.ts";
+import { capital, plain, planPercent, signedPercent } from "../../words/index.ts";
+import { type Drawing, draw } from "../charts/draw.ts";
+import { type ForestAxis, type ForestRow, forestAxis, forestScale, forestStrip } from "../charts/forest.ts";
+import { lineStyle } from "../charts/theme.ts";
+import { type EffectText, effectText, NONE, PURPOSE, signedAmount } from "../effect-text.ts";
+import { controlOf, metricOf } from "../plan-words.ts";
+
+/** The forest plot as a table: words and figures are text of the page, each row's line is a drawing of its own. */
+export interface ForestTable {
+  readonly title: string;
+  readonly reading: string;
+  readonly levelsHead: string;
+  readonly plotHead: string;
+  readonly groups: readonly ForestGroup[];
+  /** The zero line beside a group's heading, and the axis below all rows. */
+  readonly zeroLine: Drawing;
+  readonly axis: Drawing;
+  readonly anyDrawn: boolean;
+  readonly numberColumns: readonly string[];
+  readonly numbers: readonly NumbersRow[];
+}
+export interface ForestGroup {
+  readonly purpose: string;
+  readonly rows: readonly ForestTableRow[];
+}
+export interface ForestTableRow {
+  readonly metric: string;
+  /** "" where the plan has one variant beside the control: the heading names it. */
+  readonly variant: string;
+  /** "12.0% → 13.2%". */
+  readonly levels: string;
+  readonly drawing: Drawing | null;
+  readonly estimate: string;
+  readonly interval: string;
+  readonly asked: string;
+}
+/** The numbers behind a row, with six digits. */
+export interface NumbersRow {
+  readonly metric: string;
+  readonly variant: string;
+  readonly cells: readonly string[];
+}
+
+const GROUPS: readonly Role[] = ["primary", "guardrail", "secondary"];
+
+export async function forestTable(effects: readonly Effect[], plan: Plan): Promise<ForestTable> {
+  const ordered = GROUPS.flatMap((role) => effects.filter((effect) => effect.role === role));
+  const rows = new Map(ordered.map((effect) => [effect, forestRow(effect, plan)]));
+  const drawn = [...rows.values()].filter((row) => row !== null);
+  const axis = forestAxis(drawn);
+  const others = plan.variants.filter((variant) => !variant.isControl);
+
+  const groups: ForestGroup[] = [];
+  for (const role of GROUPS) {
+    const own = ordered.filter((effect) => effect.role === role);
+    if (own.length === 0) continue;
+    const tableRows: ForestTableRow[] = [];
+    for (const effect of own) {
+      const row = rows.get(effect) ?? null;
+      tableRows.push({
+        metric: effect.metric,
+        variant: others.length === 1 ? "" : effect.variant,
+        ...rowTexts(effectText(effect, metricOf(plan, effect.metric), plan)),
+        drawing:
+          row === null ? null : await draw(forestStrip(row, axis), `forest-${ordered.indexOf(effect) + 1}`, null),
+      });
+    }
+    groups.push({ purpose: PURPOSE[role], rows: tableRows });
+  }
+  const control = controlOf(plan).name;
+  const several = others.length > 1;
+  const variant = several ? "variant" : (others[0]?.name ?? "variant");
+  return {
+    title: `${several ? "Each variant" : capital(variant)} against ${control}: the difference in percent of the level with ${control}`,
+    reading: readingText(
+      plan,
+      drawn.some(({ relative }) => reachesFrame(relative, axis)),
+    ),
+    levelsHead: `${control} \u2192 ${variant}`,
+    plotHead: "Difference in percent",
+    groups,
+    zeroLine: await draw(forestStrip(null, axis), "forest-zero", null),
+    axis: await draw(forestScale(axis, axisLabel), "forest-axis", axisText(axis)),
+    anyDrawn: drawn.length > 0,
+    numberColumns: NUMBERS.map(([head]) => head),
+    numbers: ordered.map((effect) => ({
+      metric: effect.metric,
+      variant: effect.variant,
+      cells: NUMBERS.map(([, pick]) => sixDigits(pick(effect))),
+    })),
+  };
+}
+
+function rowTexts(text: EffectText) {
+  const { estimate, interval } = text.relative ?? text.difference;
+  return {
+    levels: `${text.levels[0]} \u2192 ${text.levels[1]}${text.per === "" ? "" : ` ${text.per}`}`,
+    estimate,
+    interval: interval === "" ? "" : `(${interval})`,
+    asked: text.asked === "" ? "" : text.asked,
+  };
+}
+
+function readingText(plan: Plan, beyond: boolean): string {
+  const confidence = planPercent(plan.decision.confidence);
+  const edge = beyond ? " A line that reaches the edge goes on beyond it; the figures are whole." : "";
+  return `Thin line: ${confidence} interval; square: estimate; long upright: no difference; short upright: what the plan asked for, or its limit.${edge}`;
+}
+
+const NUMBERS: readonly (readonly [head: string, pick: (effect: Effect) => number | null])[] = [
+  ["control", ({ contrast }) => contrast.control.mean],
+  ["variant", ({ contrast }) => contrast.variant.mean],
+  ["difference", ({ contrast }) => contrast.difference.estimate],
+  ["low", ({ contrast }) => contrast.difference.low],
+  ["high", ({ contrast }) => contrast.difference.high],
+  ["relative", ({ contrast }) => relativeOf(contrast)?.estimate ?? null],
+  ["low", ({ contrast }) => relativeOf(contrast)?.low ?? null],
+  ["high", ({ contrast }) => relativeOf(contrast)?.high ?? null],
+  ["p", ({ contrast }) => contrast.difference.p],
+];
+
+function relativeOf({ relative }: Effect["contrast"]): Relative | null {
+  return "absent" in relative ? null : relative;
+}
+
+function sixDigits(figure: number | null): string {
+  return figure === null ? NONE : plain(Number(figure.toPrecision(6)));
+}
+
+/** Null where the relative difference is not shown: the row stands as text. */
+function forestRow(effect: Effect, plan: Plan): ForestRow | null {
+  const { relative, control } = effect.contrast;
+  if ("absent" in relative) return null;
+  const metric = metricOf(plan, effect.metric);
+  const amount = metric.worthwhile ?? metric.margin;
+  const others = plan.variants.filter((variant) => !variant.isControl);
+  // an absolute amount has its place on this axis as a share of the control's level
+  const share = amount?.kind === "absolute" ? 1 / (control.mean ?? Number.NaN) : 1;
+  const mark = amount === null ? null : signedAmount(amount, metric) * share;
+  return {
+    relative,
+    mark: mark === null || !Number.isFinite(mark) ? null : mark,
+    decides: effect.role !== "secondary",
+    style: lineStyle(
+      others.findIndex((variant) => variant.name === effect.variant),
+      others.length,
+    ),
+  };
+}
+
+function reachesFrame({ low, high }: Relative, axis: ForestAxis): boolean {
+  return low === null || high === null || low < axis.low || high > axis.high;
+}
+
+function axisLabel(tick: number): string {
+  return tick === 0 ? "0" : signedPercent(tick).replace(/\.0%$/, "%");
+}
+
+function axisText(axis: ForestAxis) {
+  return {
+    title: "Axis of the drawing: difference from the control in percent of its level",
+    description: `From ${signedPercent(axis.low)} to ${signedPercent(axis.high)}; the zero line is no difference.`,
+  };
+}

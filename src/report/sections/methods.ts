@@ -1,0 +1,147 @@
+import type { Effect } from "../../decision/types.ts";
+import type { InputFile, Reduction } from "../../engine/types.ts";
+import type { Plan } from "../../plan/types.ts";
+import { count, list, planPercent } from "../../words/index.ts";
+import type { ReportInputs } from "../types.ts";
+
+/** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
+export interface MethodsSection {
+  readonly methods: readonly { readonly name: string; readonly how: string; readonly source: string }[];
+  readonly files: readonly FileText[];
+  readonly lists: readonly FileText[];
+  readonly facts: readonly { readonly name: string; readonly value: string }[];
+  readonly cautions: readonly string[];
+  readonly planText: string;
+}
+export interface FileText {
+  readonly name: string;
+  readonly rows: string;
+  readonly bytes: string;
+  readonly fingerprint: string;
+}
+
+export function methodsSection({
+  plan,
+  planText,
+  planSha256,
+  version,
+  reduction,
+  effects,
+}: ReportInputs): MethodsSection {
+  return {
+    methods: methods(plan, effects),
+    files: reduction.inputs.map(fileText),
+    lists: reduction.lists.map(fileText),
+    facts: facts(plan, planSha256, version, reduction),
+    cautions: cautions(plan),
+    planText,
+  };
+}
+
+function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
+  return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
+}
+
+function facts(plan: Plan, planSha256: string, version: string, { engine }: Reduction) {
+  const { owner, link, ended, notes, decided } = plan.texts;
+  const decision =
+    decided === null
+      ? null
+      : [decided.what, decided.by && `by ${decided.by}`, decided.on && `on ${decided.on}`, decided.because]
+          .filter((part) => part !== null && part !== "")
+          .join(", ");
+  const known: readonly (readonly [string, string | null])[] = [
+    ["Plan, SHA-256", planSha256],
+    ["closeout", version],
+    ["Engine", `${engine.name} ${engine.version}`],
+    ["Days and times", plan.timezone],
+    ["Owner", owner],
+    ["Link", link],
+    ["Why it ended", ended],
+    ["Decided", decision],
+    ["Notes", notes],
+  ];
+  return known.flatMap(([name, value]) => (value === null || value === "" ? [] : [{ name, value }]));
+}
+
+/** Only what this report uses. */
+function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["methods"] {
+  const used = new Set(effects.map((effect) => effect.contrast.difference.method));
+  const beside = new Set(effects.flatMap((effect) => effect.contrast.beside.map(({ method }) => method)));
+  const has = (summary: Effect["summary"]) => effects.some((effect) => effect.summary === summary);
+  const others = plan.variants.filter((variant) => !variant.isControl).length;
+  const confidence = planPercent(plan.decision.confidence);
+  const { many } = plan.unitCalled;
+  const all: readonly (MethodsSection["methods"][number] & { readonly when: boolean })[] = [
+    {
+      when: true,
+      name: "Difference",
+      how: `Variant minus control, of means over ${many}; two-sided ${confidence} interval by the normal approximation, each group with its own variance.`,
+      source: "Neyman 1923, Statistical Science 5 (1990) 465-472; Imbens and Rubin 2015, chapter 6",
+    },
+    {
+      when: effects.some((effect) => !("absent" in effect.contrast.relative)),
+      name: "Relative difference",
+      how: "Variant over control, minus 1, with the interval for a ratio of means that holds 0 exactly when the difference\u2019s does. Not shown where the control\u2019s level is not clearly above 0.",
+      source: "Fieller 1954, Journal of the Royal Statistical Society B 16, 175-185",
+    },
+    {
+      when: has("proportion"),
+      name: "Shares",
+      how: "A share is the mean of a 0 or 1 per unit. The score interval is shown beside it, and counts where a group has fewer than 10 units with, or fewer than 10 without; the relative difference then follows from the same limits.",
+      source:
+        "Newcombe 1998, Statistics in Medicine 17, 873-890, method 10; Wilson 1927; Donner and Zou 2012, Statistical Methods in Medical Research 21, 347-359",
+    },
+    {
+      when: has("ratio-of-totals"),
+      name: "Ratio of totals",
+      how: "Total over total in each group; its variance from the score of each unit, numerator minus ratio times denominator, over the mean denominator.",
+      source: "Cochran 1977, chapter 6; Deng, Knoblich and Lu 2018",
+    },
+    {
+      when: used.has("welch") || beside.has("welch"),
+      name: "Small groups",
+      how: `Under 200 ${many} in a group, Student\u2019s t with the degrees of freedom of unequal variances takes the place of the normal distribution.`,
+      source: "Welch 1947, Biometrika 34, 28-35; Satterthwaite 1946",
+    },
+    {
+      when: others > 1,
+      name: "Several variants",
+      how: `Each variant is compared with the control. For what decides and what must not get worse, the ${others} intervals hold together with ${confidence} confidence: the error is shared out evenly over the variants, and p is multiplied by their number.`,
+      source: "Bonferroni; see Dunn 1961, Journal of the American Statistical Association 56, 52-64",
+    },
+    {
+      when: effects.filter((effect) => effect.role === "primary").length > others,
+      name: "Several deciding measures",
+      how: "Every one of them must pass, so none of their intervals needs to be wider.",
+      source: "Berger 1982, Technometrics 24, 295-300",
+    },
+    {
+      when: effects.some((effect) => effect.role === "guardrail"),
+      name: "What must not get worse",
+      how: "Held when the interval\u2019s harmful end stays within the limit that the plan set beforehand: non-inferiority.",
+      source: "ICH E9 and E10; CONSORT extension to non-inferiority trials, Piaggio and others 2012",
+    },
+    {
+      when: true,
+      name: "Who was counted",
+      how: `Each row and each ${plan.unitCalled.one} ends on one line of section 4. A ${plan.unitCalled.one} is counted in the group of its first enrolment, whatever it did later; one without events counts with 0.`,
+      source: "CONSORT 2010 flow diagram; ICH E9(R1)",
+    },
+  ];
+  return all.filter(({ when }) => when).map(({ name, how, source }) => ({ name, how, source }));
+}
+
+/** METHODS 9. */
+function cautions(plan: Plan): string[] {
+  const secondary = plan.metrics.filter((metric) => metric.role === "secondary").map(({ name }) => name);
+  return [
+    "Statistical evidence is not the whole decision: cost, law, strategy and the people concerned are not in the figures.",
+    "Experiments on people need the consent and the privacy that the law of the place asks for; event logs are personal data.",
+    "Not for clinical, safety or other regulated decisions: these need a registered protocol and a licensed practitioner.",
+    "The size of this test was to be fixed beforehand. Looking at the result before the planned end, and stopping when it pleases, makes false results more frequent than stated.",
+    secondary.length === 0
+      ? "What was not named beforehand as deciding can suggest; it does not decide."
+      : `Measures for information suggest, they do not decide: ${list(secondary)}.`,
+  ];
+}

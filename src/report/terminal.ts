@@ -1,0 +1,85 @@
+import type { Effect } from "../decision/types.ts";
+import type { Plan } from "../plan/types.ts";
+import { count } from "../words/index.ts";
+import { effectText, PURPOSE } from "./effect-text.ts";
+import { controlOf, metricOf } from "./plan-words.ts";
+import { answers } from "./sections/decision.ts";
+import type { ReportInputs, TerminalPaths } from "./types.ts";
+
+const WIDTH = 100;
+
+/** The conclusion and a short table, plain lines. Colour, if any, is the command line's. */
+export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string {
+  const { plan, effects, conclusion, reduction } = inputs;
+  const table =
+    conclusion.decision === "undecidable" || effects.length === 0 ? [] : [...effectTable(effects, plan), ""];
+  const notes = answers(inputs);
+  const [data] = notes;
+  const counted = reduction.unitLines.find((line) => line.id === "analysed")?.units ?? 0;
+  return [
+    printable(plan.experiment),
+    "",
+    ...wrapped(conclusion.sentence),
+    ...conclusion.reasons.flatMap((reason) => wrapped(reason)),
+    "",
+    ...table,
+    ...labelled("Data", data?.answer ?? ""),
+    ...labelled(
+      "Counted",
+      `${count(counted)} of ${count(reduction.unitsSeen)} ${plan.unitCalled.many}; all ${count(reduction.rowsRead)} rows accounted for`,
+    ),
+    ...labelled("Report", paths.report),
+    ...labelled("To paste", paths.summary),
+  ]
+    .map((line) => line.trimEnd())
+    .join("\n");
+}
+
+/** One row a metric and variant; each variant gets a table of its own, so that its level stands under its name. */
+function effectTable(effects: readonly Effect[], plan: Plan): string[] {
+  const control = controlOf(plan).name;
+  const others = plan.variants.filter((variant) => !variant.isControl);
+  return others.flatMap(({ name }, i) => {
+    const rows = effects
+      .filter((effect) => effect.variant === name)
+      .map((effect) => {
+        const metric = metricOf(plan, effect.metric);
+        const text = effectText(effect, metric, plan);
+        const { estimate, interval } = text.relative ?? text.difference;
+        const zone = effect.role === "secondary" ? PURPOSE.secondary : text.zone;
+        return [effect.metric, ...text.levels, estimate, interval, zone].map(printable);
+      });
+    const head = ["", control, name, "difference", "95% interval", ""].map(printable);
+    return [...(i === 0 ? [] : [""]), ...aligned([head, ...rows])];
+  });
+}
+
+/** Words to the left, figures to the right; columns as wide as their widest cell. */
+function aligned(rows: readonly (readonly string[])[]): string[] {
+  const columns = Math.max(...rows.map((row) => row.length));
+  const widths = Array.from({ length: columns }, (_, c) => Math.max(...rows.map((row) => (row[c] ?? "").length)));
+  return rows.map((row) =>
+    row
+      .map((cell, c) => (c === 0 || c >= columns - 2 ? cell.padEnd(widths[c] ?? 0) : cell.padStart(widths[c] ?? 0)))
+      .join("   "),
+  );
+}
+
+function labelled(label: string, text: string): string[] {
+  return wrapped(text, WIDTH - 9).map((line, i) => (i === 0 ? label.padEnd(9) : " ".repeat(9)) + line);
+}
+
+function wrapped(text: string, width = WIDTH): string[] {
+  const lines: string[] = [];
+  for (const word of printable(text).split(" ")) {
+    const last = lines[lines.length - 1];
+    if (last === undefined || last.length + word.length + 1 > width) lines.push(word);
+    else lines[lines.length - 1] = `${last} ${word}`;
+  }
+  return lines;
+}
+
+/** A name from the plan must not move the cursor or colour the screen: control characters become spaces. */
+function printable(text: string): string {
+  return text.replace(/[\p{Cc}\p{Cf}\u2028\u2029]+/gu, " ").replace(/ +/g, " ");
+}
