@@ -91,7 +91,7 @@ function builtMetric(metric: PlanYaml["metrics"][number], path: Path, source: Pl
       cap === undefined
         ? null
         : cap.quantile === undefined
-          ? { kind: "at", at: decimalAt(source.yaml, [...path, "cap", "at"]) }
+          ? { kind: "at", at: known(decimalAt(source.yaml, [...path, "cap", "at"]), "cap") }
           : { kind: "quantile", q: exactShare(cap.quantile, [...path, "cap", "quantile"], source) },
     withoutRows: metric["without-rows"] === "leave-out" ? "leave-out" : "zero",
   };
@@ -137,7 +137,7 @@ function shareText(share: number | string): DecimalText {
 
 /** A share with the digits of the plan's text. */
 function exactShare(share: number | string, path: Path, source: PlanSource): DecimalText {
-  return typeof share === "number" ? decimalAt(source.yaml, path) : shareText(share);
+  return typeof share === "number" ? known(decimalAt(source.yaml, path), "share") : shareText(share);
 }
 
 function known<T>(value: T | null, what: string): T {

@@ -1,7 +1,10 @@
 /** From text to plan. */
-export { loadPlan } from "./load.ts";
+export { type LoadedPlan, loadPlan } from "./load.ts";
+/** Problems: those that only the log can show, and all of them in words. */
+export { type FoundFile, type FoundLog, logProblems, noSuchFile, noSuchList } from "./log.ts";
 /** The grammar of numbers and times, for whoever reads a log. */
 export { parseNumber } from "./number.ts";
+export { placeProblems, unreadablePlan } from "./problems.ts";
 export { planJsonSchema } from "./schema.ts";
 export type { PlanSource } from "./source.ts";
 export { parseTime } from "./time.ts";

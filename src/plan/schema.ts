@@ -1,69 +1,10 @@
 import { z } from "zod";
-import { PERCENT } from "./number.ts";
+import { amount, column, days, eitherOf, moment, percentage, shareBetween0And1, text, where } from "./schema-values.ts";
 
 /**
  * The plan as its YAML has it: the one source of truth. The types, the messages about a wrong key or value and
- * `closeout schema` come from here; what only a combination of keys can show is in rules/.
+ * `closeout schema` come from here; what only several parts of the plan together can show is in rules/.
  */
-
-const text = (description: string) => z.string().min(1).meta({ description });
-const column = (description: string) => text(description);
-
-/** A number or a percentage. Its range is checked in rules/amounts.ts, which can say what to write instead. */
-const share = (description: string, limits: Record<string, number>) =>
-  z
-    .union([z.number().meta(limits), z.string().regex(PERCENT)])
-    .meta({ description, expected: "a share such as 0.05 or 5%" });
-
-const BETWEEN_0_AND_1 = { exclusiveMinimum: 0, exclusiveMaximum: 1 };
-const ABOVE_0 = { exclusiveMinimum: 0 };
-
-const amount = (description: string) =>
-  z
-    .strictObject({
-      relative: share("A share of the control's level.", { ...ABOVE_0, maximum: 1 }).optional(),
-      absolute: z
-        .union([z.number().meta(ABOVE_0), z.string().regex(PERCENT)])
-        .meta({
-          description: "An amount in the metric's own unit; of a proportion a share.",
-          expected: "a number in the metric's own unit",
-        })
-        .optional(),
-    })
-    .meta({ description, minProperties: 1, maxProperties: 1 });
-
-const scalar = z.union([z.string(), z.number(), z.boolean()]).meta({ expected: "a text, a number, true or false" });
-const scalars = z.array(scalar).min(1).meta({ expected: "a list of values" });
-const values = z.union([scalar, scalars]).meta({ expected: "a value or a list of values" });
-
-const condition = z
-  .union([
-    scalar,
-    scalars,
-    z
-      .strictObject({
-        not: values.meta({ description: "Matches what is there and is none of these." }).optional(),
-        in: values.meta({ description: "Matches any of these." }).optional(),
-        above: z.number().optional(),
-        below: z.number().optional(),
-        "at-least": z.number().optional(),
-        "at-most": z.number().optional(),
-        missing: z.boolean().meta({ description: "true matches empty cells, false all others." }).optional(),
-        matches: z
-          .union([z.string(), z.array(z.string()).min(1)])
-          .meta({
-            description: "Patterns over the whole value: * for any text, ? for one character.",
-            expected: "a pattern or a list of patterns",
-          })
-          .optional(),
-      })
-      .meta({ minProperties: 1, description: "Tests of the column that must all hold." }),
-  ])
-  .meta({ expected: "a value, a list of values, or tests such as {above: 3}" });
-
-const where = z
-  .record(z.string().min(1), condition)
-  .meta({ description: "Columns and what they must hold; all of them together.", minProperties: 1 });
 
 const part = (description: string) =>
   z
@@ -81,7 +22,7 @@ const part = (description: string) =>
     .meta({ description });
 
 const source = z.strictObject({
-  files: z.union([text("A path or a glob, relative to the plan."), z.array(z.string().min(1)).min(1)]).meta({
+  files: z.union([text("A path or a glob, relative to the plan."), z.array(text("A path or a glob.")).min(1)]).meta({
     description:
       "csv, tsv, ndjson or parquet; plain, .gz or .zst; a path, a glob or a list of them, relative to the plan.",
     expected: "a path, or a list of paths",
@@ -108,7 +49,7 @@ const metric = z.strictObject({
     .meta({ description: "How the units' values become one figure per variant." }),
   of: part("What is taken of a unit's rows."),
   per: part("The denominator of a ratio of totals.").optional(),
-  quantile: share("Which quantile.", BETWEEN_0_AND_1).optional(),
+  quantile: shareBetween0And1("Which quantile.").optional(),
   in: text("The unit of measurement, for the reader.").optional(),
   "good-is": z.enum(["higher", "lower"]).default("higher"),
   worthwhile: amount("The smallest effect worth adopting; primary metrics only.").optional(),
@@ -116,20 +57,29 @@ const metric = z.strictObject({
   margin: amount("The largest harm tolerated; guardrails only, and there required.").optional(),
   cap: z
     .strictObject({
-      quantile: share("Cap at this quantile of the units' values.", BETWEEN_0_AND_1).optional(),
+      quantile: shareBetween0And1("Cap at this quantile of the units' values.").optional(),
       at: z.number().meta({ description: "Cap at this value." }).optional(),
     })
-    .meta({ description: "Larger values count as the cap.", minProperties: 1, maxProperties: 1 })
+    .superRefine(eitherOf("quantile", "at"))
+    .meta({
+      description: "Larger values count as the cap.",
+      expected: "{quantile: 0.999} or {at: 500}",
+      minProperties: 1,
+      maxProperties: 1,
+    })
     .optional(),
   "adjust-for": z
     .strictObject({
-      "days-before": z
-        .number()
-        .meta({ ...ABOVE_0, description: "The same quantity, so many days before enrolment." })
-        .optional(),
+      "days-before": days("The same quantity, so many days before enrolment.").optional(),
       column: column("A column with a value known at enrolment.").optional(),
     })
-    .meta({ description: "A covariate.", minProperties: 1, maxProperties: 1 })
+    .superRefine(eitherOf("days-before", "column"))
+    .meta({
+      description: "A covariate.",
+      expected: "{days-before: 14} or {column: past_fares}",
+      minProperties: 1,
+      maxProperties: 1,
+    })
     .optional(),
   "without-rows": z
     .literal([0, "leave-out"])
@@ -140,7 +90,7 @@ const metric = z.strictObject({
 const filter = z.strictObject({
   name: text("The filter's name, as the reader will see it."),
   why: text("Why, in one sentence for the reader.").optional(),
-  drop: z.enum(["units", "rows"]),
+  drop: z.enum(["units", "rows"]).meta({ description: "What it removes." }),
   where: where.optional(),
   "listed-in": text("A file of unit ids: one a line, or a column headed like the unit's.").optional(),
   when: z
@@ -154,10 +104,10 @@ const variant = z.strictObject({
   what: text("What it is, in one sentence for the reader.").optional(),
   control: z.boolean().default(false),
   allocation: z
-    .union([z.number().meta(ABOVE_0), z.string().regex(PERCENT)])
+    .union([z.number().gt(0), percentage((share) => share > 0)])
     .meta({
       description: "The planned share of units, as 1 to 1 or 50%.",
-      expected: "a number such as 1, or a share such as 50%",
+      expected: "a number above 0, such as 1, or a share such as 50%",
     })
     .default(1),
 });
@@ -175,8 +125,8 @@ export const planSchema = z
     enrolment: z
       .strictObject({
         event: text("Only rows of this event enrol.").optional(),
-        from: text("A date or time; inclusive.").optional(),
-        before: text("A date or time; exclusive.").optional(),
+        from: moment("Enrolment counts from here on.").optional(),
+        before: moment("Enrolment counts up to here, this moment not included.").optional(),
         "in-two-variants": z.enum(["first", "exclude"]).default("first"),
       })
       .prefault({}),
@@ -184,24 +134,26 @@ export const planSchema = z
     ended: text("Why the experiment ended.").optional(),
     "follow-up": z
       .strictObject({
-        days: z.number().meta({ ...ABOVE_0, description: "Days of 24 hours after enrolment." }),
+        days: days("Days of 24 hours after enrolment."),
         incomplete: z.enum(["exclude", "keep"]).default("exclude"),
       })
       .optional(),
     metrics: z.array(metric).min(1).meta({ description: "At least one primary." }),
     filters: z.array(filter).default([]),
-    subgroups: z.array(z.string().min(1)).optional(),
+    subgroups: z.array(text("A column of the log.")).optional(),
     decision: z
       .strictObject({
-        confidence: share("The confidence of the intervals.", BETWEEN_0_AND_1).default(0.95),
-        power: share("The power used for sizing.", BETWEEN_0_AND_1).default(0.8),
+        confidence: shareBetween0And1("The confidence of the intervals.").default(0.95),
+        power: shareBetween0And1("The power used for sizing.").default(0.8),
         "adopt-when": z.enum(["shown-better", "shown-worthwhile"]).default("shown-better"),
         primaries: z.enum(["all", "any"]).default("all"),
         interval: z.enum(["normal", "skew-corrected"]).default("normal"),
       })
       .prefault({}),
     planned: z
-      .strictObject({ units: z.number().meta({ ...ABOVE_0, description: "All variants together." }) })
+      .strictObject({
+        units: z.int().gt(0).meta({ description: "All variants together.", expected: "a whole number above 0" }),
+      })
       .meta({ description: "What the sizing asked for." })
       .optional(),
     owner: text("Who owns the experiment.").optional(),
@@ -228,5 +180,11 @@ export type AmountYaml = NonNullable<PlanYaml["metrics"][number]["worthwhile"]>;
 
 /** The JSON Schema of a plan, for editors; draft 7, which they know best. */
 export function planJsonSchema(): object {
-  return z.toJSONSchema(planSchema, { io: "input", target: "draft-7" });
+  return z.toJSONSchema(planSchema, {
+    io: "input",
+    target: "draft-7",
+    override: ({ jsonSchema }) => {
+      delete jsonSchema.expected; // for our messages, no word of JSON Schema
+    },
+  });
 }

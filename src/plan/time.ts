@@ -1,4 +1,5 @@
 import { Temporal } from "temporal-polyfill";
+import { decimalOf } from "./number.ts";
 
 /**
  * A time as a log or a plan writes it, in microseconds since the epoch (DESIGN 4, rule 1). The reference for what the
@@ -39,6 +40,13 @@ export function timeZoneNamed(name: string): string | null {
     return null;
   }
 }
+
+/** Whether so many days of 24 hours are a whole number of microseconds, the grain of all times. */
+export function isWholeMicroseconds(days: number): boolean {
+  const [whole = "", fraction = ""] = decimalOf(days).split(".");
+  return (BigInt(whole + fraction) * DAY) % 10n ** BigInt(fraction.length) === 0n;
+}
+const DAY = 86_400_000_000n; // microseconds
 
 const TIME =
   /^(\d{4}-\d{2}-\d{2})(?:[T ](\d{2}:\d{2})(?::(\d{2})(?:\.(\d+))?)?(Z|[+-]\d{2}|[+-]\d{4}|[+-]\d{2}:\d{2})?)?$/;

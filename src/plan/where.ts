@@ -26,7 +26,7 @@ function columnTests(column: string, condition: Condition, path: Path, yaml: Yam
       case "below":
       case "at-least":
       case "at-most":
-        return { column, kind: operator, value: decimalAt(yaml, inside) };
+        return { column, kind: operator, value: given(decimalAt(yaml, inside)) };
       case "missing":
         return { column, kind: "missing", value: given(condition.missing) };
       case "matches":
@@ -45,10 +45,10 @@ function scalars(values: Values, path: Path, yaml: YamlText): readonly Scalar[] 
 function scalar(value: string | number | boolean, path: Path, yaml: YamlText): Scalar {
   if (typeof value === "string") return { kind: "text", text: value };
   if (typeof value === "boolean") return { kind: "boolean", value };
-  return { kind: "number", value: decimalAt(yaml, path) };
+  return { kind: "number", value: given(decimalAt(yaml, path)) };
 }
 
-function given<T>(value: T | undefined): T {
-  if (value === undefined) throw new Error("a key of the plan without a value passed the schema");
+function given<T>(value: T | undefined | null): T {
+  if (value === undefined || value === null) throw new Error("a key of the plan without a value passed the schema");
   return value;
 }

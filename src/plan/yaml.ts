@@ -2,6 +2,7 @@ import {
   type Document,
   isAlias,
   isMap,
+  isNode,
   isScalar,
   isSeq,
   LineCounter,
@@ -11,7 +12,7 @@ import {
   type YAMLError,
 } from "yaml";
 import { parseYamlNumber } from "./number.ts";
-import type { Problem } from "./types.ts";
+import type { DecimalText, Problem } from "./types.ts";
 
 /** The plan's text, its YAML tree and its lines: what is needed to say where something stands. */
 export interface YamlText {
@@ -24,7 +25,8 @@ export type Path = readonly (string | number)[];
 export type Span = readonly [number, number];
 
 /** Parses YAML 1.2 (core schema). What is not YAML comes back as problems; no structure is then to be trusted. */
-export function readYaml(text: string): { yaml: YamlText; problems: readonly Problem[]; isBroken: boolean } {
+export function readYaml(fileText: string): { yaml: YamlText; problems: readonly Problem[]; isBroken: boolean } {
+  const text = fileText.replace(/^\uFEFF/, ""); // a byte order mark is no column of the first line
   const lines = new LineCounter();
   const document = parseDocument(text, { schema: "core", lineCounter: lines, prettyErrors: false });
   const faults = [...document.errors, ...document.warnings];
@@ -92,13 +94,46 @@ export function nodeAt(yaml: YamlText, path: Path): { key: Scalar | null; value:
   return found;
 }
 
-/** The digits of the number at a path, exactly as the text has them, in canonical form. */
-export function decimalAt(yaml: YamlText, path: Path): string {
+/** Gives a key of the tree another name, where the mapping has none of that name; the text stays as it is. */
+export function renameKey(yaml: YamlText, mapping: Path, from: string, to: string): boolean {
+  const value = nodeAt(yaml, mapping)?.value;
+  const node = isAlias(value) ? value.resolve(yaml.document) : value;
+  if (!isMap(node) || node.items.some((pair) => keyText(pair) === to)) return false;
+  const pair = node.items.find((item) => keyText(item) === from);
+  if (!isScalar(pair?.key)) return false;
+  pair.key.value = to;
+  return true;
+}
+
+/** A scalar as the text writes it, quotes aside. */
+export function sourceAt(yaml: YamlText, path: Path): string {
   const value = nodeAt(yaml, path)?.value;
   const node = isAlias(value) ? value.resolve(yaml.document) : value;
-  const decimal = isScalar(node) ? decimalText(node) : null;
-  if (decimal === null) throw new Error(`no number at ${path.join(", ")}`);
-  return decimal;
+  return isScalar(node) ? (node.source ?? "") : "";
+}
+
+/** The path of the innermost key or item that holds an offset of the text. */
+export function pathAt(yaml: YamlText, offset: number): Path {
+  let node: unknown = yaml.document.contents;
+  const path: (string | number)[] = [];
+  for (;;) {
+    const inside: readonly { step: string | number | null; start: number; node: unknown }[] = isMap(node)
+      ? node.items.map((pair) => ({ step: keyText(pair), start: startOf(pair.key), node: pair.value }))
+      : isSeq(node)
+        ? node.items.map((item, i) => ({ step: i, start: startOf(item), node: item }))
+        : [];
+    const last = inside.findLast(({ start }) => start <= offset);
+    if (last === undefined || last.step === null) return path;
+    path.push(last.step);
+    node = last.node;
+  }
+}
+
+/** The digits of the number at a path, exactly as the text has them, in canonical form; null if there is no number. */
+export function decimalAt(yaml: YamlText, path: Path): DecimalText | null {
+  const value = nodeAt(yaml, path)?.value;
+  const node = isAlias(value) ? value.resolve(yaml.document) : value;
+  return isScalar(node) && typeof node.value === "number" ? decimalText(node) : null;
 }
 
 export function keyText(pair: Pair): string | null {
@@ -106,8 +141,14 @@ export function keyText(pair: Pair): string | null {
   return typeof pair.key.value === "string" ? pair.key.value : (pair.key.source ?? String(pair.key.value));
 }
 
-function decimalText(node: Scalar): string | null {
-  return parseYamlNumber(node.source ?? "");
+/** Null for what YAML takes for a number and nobody else does (0x1F, .inf), and for more digits than are written out. */
+function decimalText(node: Scalar): DecimalText | null {
+  const decimal = parseYamlNumber(node.source ?? "");
+  return decimal?.includes("e") ? null : decimal;
+}
+
+function startOf(node: unknown): number {
+  return isNode(node) && node.range ? node.range[0] : Number.POSITIVE_INFINITY;
 }
 
 function spanOfKey(pair: Pair): { span?: Span } {
