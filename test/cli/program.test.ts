@@ -108,7 +108,8 @@ describe("what is asked for", () => {
   it("prints help to stdout with status 0, and only the commands that are there", async () => {
     const { status, stdout, stderr } = await command(["--help"]);
     expect([status, stderr]).toEqual([0, ""]);
-    expect(stdout.match(/^ {2}(\w+) /gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
+    const [, commands = ""] = /Commands:\n([^]*?)\n\n/.exec(stdout) ?? [];
+    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
   });
 
   it("prints the help of a command", async () => {
@@ -169,7 +170,7 @@ describe("the terminal", () => {
     "Fare calendar",
     "Adopt the calendar.\n13.2 of 100 visitors booked.",
     "           list  calendar\nBooked    12.0%     13.2%",
-    "Data     12 checks passed\nReport   out/x/report.html",
+    "Data     12 checks passed\nReport   out/x/report.html\nTo paste out/x/summary.md",
   ].join("\n\n");
 
   it("adds accents to the conclusion, the table's head and the last labels, and changes no word", () => {
@@ -181,7 +182,8 @@ describe("the terminal", () => {
     expect(stripVTControlCharacters(shown)).toBe(text);
     expect(shown).toContain("\x1b[1mAdopt the calendar.\x1b[22m\n13.2");
     expect(shown).toContain("\x1b[2m           list  calendar\x1b[22m");
-    expect(shown).toContain("\x1b[2mReport\x1b[22m   out");
+    expect(shown).toContain("\x1b[2mReport   \x1b[22mout");
+    expect(shown).toContain("\x1b[2mTo paste \x1b[22mout");
   });
 
   it("says what is known of the progress, and nothing else", () => {
