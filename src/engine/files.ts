@@ -1,9 +1,9 @@
 import { createHash } from "node:crypto";
 import { createReadStream } from "node:fs";
-import { stat, symlink } from "node:fs/promises";
+import { readdir, stat, symlink } from "node:fs/promises";
 import path from "node:path";
 import { glob, isDynamicPattern } from "tinyglobby";
-import type { Plan, Problem } from "../plan/types.ts";
+import { noSuchFile, type PlanSource, type Problem } from "../plan/index.ts";
 
 /** Which files an entry of `log` means, in the order of their names, and their fingerprints. */
 
@@ -30,17 +30,20 @@ export function formatOf(file: string): Format | null {
 }
 
 /** The files of every entry, each once, sorted by name. What matches nothing, or has no known ending, is a problem. */
-export async function logFiles(plan: Plan, folder: string): Promise<{ files: LogFile[]; problems: Problem[] }> {
+export async function logFiles(
+  log: PlanSource["log"],
+  folder: string,
+): Promise<{ files: LogFile[]; problems: Problem[] }> {
   const files: LogFile[] = [];
   const problems: Problem[] = [];
-  for (const [source, entry] of plan.log.entries()) {
+  for (const [source, entry] of log.entries()) {
     const names = new Set<string>();
     for (const [j, pattern] of entry.files.entries()) {
-      const where = entry.files.length === 1 ? ["log", source, "files"] : ["log", source, "files", j];
+      const item = entry.files.length === 1 ? null : j;
       const found = await matches(pattern, folder);
-      if (found.length === 0) problems.push(noFile(where, pattern));
+      if (found.length === 0) problems.push(noSuchFile(source, item, pattern, await neighbours(pattern, folder)));
       for (const name of found) {
-        if (formatOf(name) === null) problems.push(unknownEnding(where, name));
+        if (formatOf(name) === null) problems.push(unknownEnding(source, item, name));
         else names.add(name);
       }
     }
@@ -49,6 +52,13 @@ export async function logFiles(plan: Plan, folder: string): Promise<{ files: Log
     }
   }
   return { files, problems };
+}
+
+/** What else lies where a path leads, for a nearest name. */
+export async function neighbours(pattern: string, folder: string): Promise<string[]> {
+  const parent = path.dirname(pattern);
+  const names = await readdir(path.resolve(folder, parent)).catch(() => []);
+  return names.map((name) => slashes(path.join(parent, name)));
 }
 
 /** Whether a plain path of the plan leads to a file. */
@@ -93,18 +103,10 @@ async function matches(pattern: string, folder: string): Promise<string[]> {
   return found.map((file) => slashes(path.relative(folder, file)));
 }
 
-const noFile = (where: readonly (string | number)[], pattern: string): Problem => ({
-  path: where,
+const unknownEnding = (source: number, item: number | null, name: string): Problem => ({
+  path: ["log", source, "files", ...(item === null ? [] : [item])],
   at: "value",
-  message: isDynamicPattern(pattern)
-    ? `No file matches ${pattern}. Patterns are read from the plan's folder.`
-    : `There is no file ${pattern}. Paths are read from the plan's folder.`,
-});
-
-const unknownEnding = (where: readonly (string | number)[], name: string): Problem => ({
-  path: where,
-  at: "value",
-  message: `The ending of ${name} says nothing about its format. Expected .csv, .tsv, .ndjson, .jsonl (also with .gz or .zst) or .parquet.`,
+  message: `The ending of ${name} does not tell its format. Expected .csv, .tsv, .ndjson, .jsonl (also with .gz or .zst) or .parquet.`,
 });
 
 const slashes = (file: string) => file.replaceAll(path.sep, "/");

@@ -33,10 +33,13 @@ export interface Dialect {
 }
 
 const NUMBER = "[+-]?[0-9]+([.][0-9]+)?(e[+-]?[0-9]+)?";
+const SHORT_NUMBER = "[+-]?[0-9]{1,9}([.][0-9]{1,9})?";
 const DATE = "[0-9]{4}-[0-9]{2}-[0-9]{2}";
 const OFFSET = "Z|[+-]([01][0-9]|2[0-3])(:?[0-5][0-9])?";
 const TIME = `${DATE}([T ]([01][0-9]|2[0-3]):[0-5][0-9](:[0-5][0-9]([.][0-9]+)?)?(${OFFSET})?)?`;
-const EPOCH = "-?[0-9]{1,18}";
+const EPOCH = "[+-]?[0-9]{1,19}";
+// The end of the calendar that plans are read with, on either side of 1970.
+const LAST_US = 8_640_000_000_000_000_000n;
 
 // 2^53 nanos: up to here DuckDB divides two exact doubles, above it rounds twice, and the text is read instead.
 const EXACT_BELOW = 9_007_199;
@@ -48,14 +51,12 @@ export const duckdb: Dialect = {
   number: (text) => sql`CASE WHEN regexp_full_match(${text}, ${NUMBER})
     THEN coalesce(CAST(try_cast(${text} AS DECIMAL(18, 9)) AS DECIMAL(27, 9)), try_cast(${text} AS DECIMAL(27, 9))) END`,
   isNumber: (text) => sql`regexp_full_match(${text}, ${NUMBER})`,
-  exact: (text) =>
-    sql`CASE WHEN regexp_full_match(${text}, ${NUMBER}) THEN try_cast(${text} AS DECIMAL(38, 18)) END`,
+  exact: (text) => sql`CASE
+    WHEN regexp_full_match(${text}, ${SHORT_NUMBER}) THEN CAST(CAST(${text} AS DECIMAL(18, 9)) AS DECIMAL(38, 18))
+    WHEN regexp_full_match(${text}, ${NUMBER}) THEN try_cast(${text} AS DECIMAL(38, 18)) END`,
   clockUs: (text) => sql`CASE
     WHEN regexp_full_match(${text}, ${TIME}) THEN epoch_us(try_cast(regexp_replace(${text}, ${`([T ].*)(${OFFSET})$`}, '\\1') AS TIMESTAMP))
-    WHEN regexp_full_match(${text}, ${EPOCH}) THEN CAST(${text} AS BIGINT) * CASE
-      WHEN length(ltrim(${text}, '-')) <= 11 THEN 1000000
-      WHEN length(ltrim(${text}, '-')) <= 14 THEN 1000
-      ELSE 1 END
+    WHEN regexp_full_match(${text}, ${EPOCH}) THEN ${epochUs(text, sql`length(ltrim(${text}, '+-'))`)}
     END`,
   statedOffsetUs: (text) => sql`CASE
     WHEN regexp_full_match(${text}, ${EPOCH}) OR ends_with(${text}, 'Z') THEN 0
@@ -71,6 +72,11 @@ export const duckdb: Dialect = {
   lastValue: (value, atUs, condition) =>
     sql`arg_max(${value}, {'at': ${atUs}, 'value': -${value}}) FILTER (WHERE ${condition} AND ${value} IS NOT NULL)`,
 };
+
+function epochUs(text: Statement, digits: Statement): Statement {
+  const us = sql`try_cast(${text} AS BIGINT) * CASE WHEN ${digits} <= 11 THEN 1000000 WHEN ${digits} <= 14 THEN 1000 ELSE 1 END`;
+  return sql`CASE WHEN ${us} BETWEEN ${-LAST_US} AND ${LAST_US} THEN ${us} END`;
+}
 
 function offset(text: Statement): Statement {
   const digits = sql`replace(${text}, ':', '')`;

@@ -1,0 +1,102 @@
+import type { Filter, Part, Plan, Where } from "../plan/types.ts";
+
+/**
+ * What the stages need to know of a plan, worked out once: which columns are read, which conditions are tested while
+ * reading, and where their answers stand.
+ */
+export interface Layout {
+  /** The columns to read as text (c-th is x<c>); the first `ordered` of them end the canonical order. */
+  readonly columns: readonly string[];
+  readonly ordered: number;
+  /** Per column: whether its values must be numbers, which then stand as v<c>. */
+  readonly numeric: readonly boolean[];
+  readonly hasTime: boolean;
+  readonly hasEventId: boolean;
+  /** Distinct conditions of metric parts (m<i>). */
+  readonly matches: readonly Pick<Part, "event" | "where">[];
+  readonly parts: readonly PartLayout[];
+  readonly rowFilters: readonly Extract<Filter, { drop: "rows" }>[];
+  /** In plan order. A flag is a condition tested while reading (w<i>). */
+  readonly unitFilters: readonly UnitFilterLayout[];
+  readonly flags: readonly Where[];
+}
+
+export interface PartLayout {
+  readonly metric: number;
+  readonly side: "of" | "per";
+  readonly match: number;
+  readonly part: Part;
+  /** Index into `columns` of the value, null for count and days. */
+  readonly value: number | null;
+}
+
+export type UnitFilterLayout =
+  | { readonly name: string; readonly kind: "at-enrolment" | "ever"; readonly flag: number }
+  | { readonly name: string; readonly kind: "listed"; readonly list: number; readonly listedIn: string };
+
+export function layout(plan: Plan): Layout {
+  const parts = plan.metrics.flatMap((metric, index) => [
+    { metric: index, side: "of" as const, part: metric.of },
+    ...(metric.per === null ? [] : [{ metric: index, side: "per" as const, part: metric.per }]),
+  ]);
+  const conditions = [
+    ...parts.map(({ part }) => part.where),
+    ...plan.filters.flatMap((filter) => ("where" in filter ? [filter.where] : [])),
+  ];
+  const tested = conditions.flatMap((tests) => tests.map((test) => test.column));
+  const columns = [...new Set([...plan.columns, ...plan.numericColumns, ...tested])];
+  const matches = distinct(parts.map(({ part }) => ({ event: part.event, where: part.where })));
+  const flags: Where[] = [];
+  let lists = 0;
+  const unitFilters = plan.filters.flatMap((filter): UnitFilterLayout[] => {
+    if (filter.drop === "rows") return [];
+    if ("listedIn" in filter) {
+      return [{ name: filter.name, kind: "listed", list: lists++, listedIn: filter.listedIn }];
+    }
+    flags.push(filter.where);
+    return [{ name: filter.name, kind: filter.when, flag: flags.length - 1 }];
+  });
+  return {
+    columns,
+    ordered: plan.columns.length,
+    numeric: columns.map((column) => plan.numericColumns.includes(column)),
+    hasTime: plan.log.every((source) => source.columns.time !== null),
+    hasEventId: plan.log.some((source) => source.columns.eventId !== null),
+    matches,
+    parts: parts.map(({ metric, side, part }) => ({
+      metric,
+      side,
+      part,
+      match: matches.findIndex((match) => same(match, part)),
+      value: "column" in part.aggregate ? columns.indexOf(part.aggregate.column) : null,
+    })),
+    rowFilters: plan.filters.filter((filter) => filter.drop === "rows"),
+    unitFilters,
+    flags,
+  };
+}
+
+type Condition = Pick<Part, "event" | "where">;
+
+const same = (a: Condition, b: Condition) =>
+  a.event === b.event && JSON.stringify(a.where) === JSON.stringify(b.where);
+
+function distinct(conditions: readonly Condition[]): Condition[] {
+  return conditions.filter((condition, i) => conditions.findIndex((other) => same(other, condition)) === i);
+}
+
+/** The ids of the unit lines, in the order in which they are decided; a unit's `line` is an index into them. */
+export function unitLineIds(plan: Plan): string[] {
+  return [
+    "not-enrolled",
+    "outside-enrolment",
+    "unknown-variant",
+    ...(plan.enrolment.inTwoVariants === "exclude" ? ["switched"] : []),
+    ...plan.filters.filter((filter) => filter.drop === "units").map((filter) => `filter:${filter.name}`),
+    ...(plan.followUp === null ? [] : ["follow-up"]),
+    "analysed",
+  ];
+}
+
+/** A row's `fate` while it is not yet known what becomes of its unit. */
+export const FATE = { seen: 0, rejected: 1, duplicate: 2, firstFilter: 3 } as const;

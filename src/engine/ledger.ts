@@ -1,0 +1,137 @@
+import type { Plan } from "../plan/index.ts";
+import { count, type Engine, type Row, text, wholeOrNull } from "./engine.ts";
+import { FATE, type Layout, unitLineIds } from "./layout.ts";
+import {
+  analysedRows,
+  copyCounts,
+  enrolledByVariant,
+  enrolmentRange,
+  eventCounts,
+  eventsThatOccur,
+  otherVariantCounts,
+  REASON,
+  rowsByFate,
+  rowsByFile,
+  rowsByReason,
+  unitsByLine,
+  unitsWithFate,
+  valueList,
+  variantCounts,
+} from "./sql/index.ts";
+import type { ByVariant, Facts, Reduction } from "./types.ts";
+
+type Ledger = Pick<Reduction, "rowsRead" | "rowLines" | "unitsSeen" | "unitLines" | "rejectReasons">;
+
+/** The account of all rows and units (DESIGN 7, flow), from counts of the stages; it must add up. */
+export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promise<Ledger> {
+  const fates = await engine.query(rowsByFate());
+  const lines = await engine.query(unitsByLine());
+  const [analysed = {}] = await engine.query(analysedRows());
+  const rowsOf = (fate: number) => sumOf(fates.filter((row) => Number(row["fate"]) === fate), "rows");
+  const ids = unitLineIds(plan);
+  const rowsOfLine = (id: string) => sumOf(lines.filter((row) => Number(row["line"]) === ids.indexOf(id)), "rows");
+
+  const rowLines = [
+    { id: "rejected", rows: rowsOf(FATE.rejected) },
+    { id: "duplicate", rows: rowsOf(FATE.duplicate) },
+    ...layout.rowFilters.map((filter, i) => ({ id: `filter:${filter.name}`, rows: rowsOf(FATE.firstFilter + i) })),
+    ...ids.slice(0, -1).map((id) => ({ id: rowLineId(id), rows: rowsOfLine(id) })),
+    { id: "before-enrolment", rows: count(analysed, "before_rows") },
+    { id: "after-follow-up", rows: count(analysed, "after_rows") },
+    { id: "in-follow-up", rows: count(analysed, "inside_rows") },
+  ];
+  const rowsRead = sumOf(fates, "rows");
+  const accounted = rowLines.reduce((sum, line) => sum + line.rows, 0);
+  if (accounted !== rowsRead) throw new Error(`row lines add up to ${accounted} but ${rowsRead} rows were read`);
+
+  return {
+    rowsRead,
+    rowLines,
+    unitsSeen: sumOf(lines, "units"),
+    unitLines: ids.map((id, line) => {
+      const own = lines.filter((row) => Number(row["line"]) === line);
+      const isNamed = id !== "not-enrolled" && id !== "unknown-variant";
+      return { id, units: sumOf(own, "units"), byVariant: isNamed ? byVariant(plan, own, "units") : null };
+    }),
+    rejectReasons: (await engine.query(rowsByReason()))
+      .map((row) => ({ reason: reasonText(count(row, "reason"), layout), rows: count(row, "rows") }))
+      .sort((a, b) => b.rows - a.rows || (a.reason < b.reason ? -1 : 1)),
+  };
+}
+
+const rowLineId = (unitLine: string) =>
+  unitLine.startsWith("filter:") ? `unit-filter:${unitLine.slice("filter:".length)}` : `unit-${unitLine}`;
+
+/** Why a row was rejected, in words; the reader of rejects.csv sees them. */
+export function reasonText(reason: number, layout: Layout): string {
+  if (reason === REASON.unreadable) return "cannot be read: the cells do not fit the header";
+  if (reason === REASON.noUnit) return "no unit";
+  if (reason === REASON.noTime) return "no readable time";
+  const isRange = reason >= REASON.outOfRange;
+  const column = layout.columns[reason - (isRange ? REASON.outOfRange : REASON.notNumber)];
+  if (column === undefined) throw new Error(`no words for reason ${reason}`);
+  return isRange ? `out of range: ${column}` : `not a number: ${column}`;
+}
+
+/** What the checks look at. */
+export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs: bigint | null): Promise<Facts> {
+  const ids = unitLineIds(plan);
+  const unknown = ids.indexOf("unknown-variant");
+  const enrolled = await engine.query(enrolledByVariant(unknown));
+  const rejected = await engine.query(unitsWithFate(FATE.rejected, unknown));
+  const duplicated = await engine.query(unitsWithFate(FATE.duplicate, unknown));
+  const copied = layout.hasEventId ? (await engine.query(copyCounts(layout)))[0] : undefined;
+  const [range = {}] = await engine.query(enrolmentRange(ids.length - 1));
+  const named = await engine.query(variantCounts());
+  const others = await engine.query(otherVariantCounts(VALUES_KEPT));
+  const rowsNaming = (variant: number) => named.find((row) => Number(row["variant"]) === variant);
+  const variants = [
+    ...plan.variants.flatMap((variant, i) => {
+      const row = rowsNaming(i);
+      return row === undefined ? [] : [{ value: variant.name, rows: count(row, "rows") }];
+    }),
+    ...others.map((row) => ({ value: text(row, "value"), rows: count(row, "rows") })),
+  ];
+  return {
+    enrolled: byVariant(plan, enrolled, "units"),
+    withRejected: byVariant(plan, rejected, "units"),
+    withDuplicate: byVariant(plan, duplicated, "units"),
+    switched: byVariant(plan, enrolled, "switched"),
+    duplicateIds: copied === undefined ? 0 : count(copied, "ids"),
+    copiesThatDiffer: copied === undefined ? 0 : count(copied, "differing"),
+    copiesOfOtherUnits: copied === undefined ? 0 : count(copied, "other_units"),
+    hasEventId: layout.hasEventId,
+    events: (await engine.query(eventCounts(VALUES_KEPT))).map((row) => ({
+      value: text(row, "value"),
+      rows: count(row, "rows"),
+    })),
+    variants: variants.sort((a, b) => b.rows - a.rows || (a.value < b.value ? -1 : 1)).slice(0, VALUES_KEPT),
+    missingEvents: await missingEvents(plan, engine),
+    missingVariants: plan.variants.filter((_, i) => rowsNaming(i) === undefined).map((variant) => variant.name),
+    firstEnrolledUs: layout.hasTime ? wholeOrNull(range, "first_us") : null,
+    lastEnrolledUs: layout.hasTime ? wholeOrNull(range, "last_us") : null,
+    logEndUs,
+  };
+}
+const VALUES_KEPT = 200;
+
+async function missingEvents(plan: Plan, engine: Engine): Promise<string[]> {
+  const parts = plan.metrics.flatMap((metric) => [metric.of, ...(metric.per === null ? [] : [metric.per])]);
+  const named = [plan.enrolment.event, ...parts.map((part) => part.event)].filter((event) => event !== null);
+  const events = [...new Set(named)];
+  if (events.length === 0) return [];
+  const found = (await engine.query(eventsThatOccur(valueList(events)))).map((row) => text(row, "value"));
+  return events.filter((event) => !found.includes(event));
+}
+
+export async function rowsPerFile(files: number, engine: Engine): Promise<number[]> {
+  const rows = await engine.query(rowsByFile());
+  return Array.from({ length: files }, (_, file) => sumOf(rows.filter((row) => Number(row["file"]) === file), "rows"));
+}
+
+/** Counts by the plan's variants; other names are in none. */
+function byVariant(plan: Plan, rows: readonly Row[], column: string): ByVariant {
+  return plan.variants.map((_, v) => sumOf(rows.filter((row) => row["variant"] !== null && Number(row["variant"]) === v), column));
+}
+
+const sumOf = (rows: readonly Row[], column: string) => rows.reduce((sum, row) => sum + count(row, column), 0);

@@ -1,0 +1,36 @@
+/** Exact decimals with 9 places as whole numbers of 10^-9. */
+
+const ONE = 1_000_000_000n;
+
+/** Decimal text, without trailing zeros: 1500000000n is "1.5". */
+export function nanoText(nano: bigint): string {
+  const size = nano < 0n ? -nano : nano;
+  const places = (size % ONE).toString().padStart(9, "0").replace(/0+$/, "");
+  return `${nano < 0n ? "-" : ""}${size / ONE}${places === "" ? "" : `.${places}`}`;
+}
+
+/** The nearest double: the text is read, for dividing the integer by 10^9 would round twice. */
+export const nanoNumber = (nano: bigint): number => Number(nanoText(nano));
+
+/** Quotient rounded to a whole number, half away from zero. */
+export function divideRounded(value: bigint, by: bigint): bigint {
+  const negative = value < 0n !== by < 0n;
+  const v = value < 0n ? -value : value;
+  const d = by < 0n ? -by : by;
+  const rounded = (2n * v + d) / (2n * d);
+  return negative ? -rounded : rounded;
+}
+
+/** The nearest double to value / by, 0 < by: enough digits of the exact quotient, read as text. */
+export function quotient(value: bigint, by: bigint): number {
+  if (value === 0n) return 0;
+  const size = value < 0n ? -value : value;
+  // 25 significant digits, and a last one that is never 0 when the rest is not: the text rounds as the quotient does.
+  const shift = 25 - (size.toString().length - by.toString().length);
+  const scaled = shift >= 0 ? size * 10n ** BigInt(shift) : size;
+  const divisor = shift >= 0 ? by : by * 10n ** BigInt(-shift);
+  const digits = scaled / divisor;
+  const sticky = scaled % divisor === 0n ? "" : "1";
+  const exponent = -shift - (sticky === "" ? 0 : 1);
+  return Number(`${value < 0n ? "-" : ""}${digits}${sticky}e${exponent}`);
+}

@@ -1,0 +1,198 @@
+import { mkdtemp, rm } from "node:fs/promises";
+import os from "node:os";
+import path from "node:path";
+import {
+  logProblems,
+  noSuchList,
+  type Plan,
+  type PlanSource,
+  type Problem,
+} from "../plan/index.ts";
+import { openDuckdb } from "./duckdb.ts";
+import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
+import { fingerprint, isFile, neighbours } from "./files.ts";
+import { FATE, type Layout, layout as layoutOf } from "./layout.ts";
+import { facts, ledger, rowsPerFile } from "./ledger.ts";
+import { readLists } from "./lists.ts";
+import { logEnd } from "./logEnd.ts";
+import { metricCells } from "./metrics.ts";
+import { type OpenLog, openLog } from "./open.ts";
+import { writeRejects } from "./rejects.ts";
+import {
+  atEnrolment,
+  copies,
+  type Dialect,
+  duckdb,
+  enrolmentKey,
+  enrolments,
+  markDuplicates,
+  rows,
+  seen,
+  sql,
+  timeBins,
+  timeRange,
+  units,
+  unreadableRows,
+} from "./sql/index.ts";
+import type { Reduction } from "./types.ts";
+import { UnusableLog } from "./unusable.ts";
+import { dayRuns, offsetsByLocalTime } from "./zone.ts";
+
+export interface ReduceOptions {
+  readonly threads?: number | undefined;
+  readonly memory?: string | undefined;
+  /** Where rejects.csv is to be written; nowhere without it. */
+  readonly rejectsTo?: string | undefined;
+  readonly progress?: ((progress: Progress) => void) | undefined;
+  readonly signal?: AbortSignal | undefined;
+}
+export interface Progress {
+  readonly stage: string;
+  readonly rows: number;
+  /** Of the whole work, roughly; null: not known. */
+  readonly share: number | null;
+}
+
+/**
+ * The log of a plan, reduced to cells and counts.
+ * @param planned the plan, or null where it has mistakes: then only the log's own problems are looked for
+ * @returns the reduction, or what is wrong between plan and log
+ * @throws UnusableLog when the log is there but cannot be used
+ */
+export async function reduce(
+  planned: Plan | null,
+  source: PlanSource,
+  folder: string,
+  options: ReduceOptions = {},
+): Promise<{ reduction: Reduction } | { problems: readonly Problem[] }> {
+  const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
+  const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
+  const stop = () => engine.interrupt();
+  options.signal?.addEventListener("abort", stop);
+  try {
+    const log = await openLog(source, folder, engine, workFolder);
+    const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
+    if (planned === null || problems.length > 0) return { problems };
+    return { reduction: await stages(planned, folder, log, engine, duckdb, options) };
+  } finally {
+    options.signal?.removeEventListener("abort", stop);
+    engine.close();
+    await rm(workFolder, { recursive: true, force: true });
+  }
+}
+
+async function stages(
+  plan: Plan,
+  folder: string,
+  log: OpenLog,
+  engine: Engine,
+  dialect: Dialect,
+  options: ReduceOptions,
+): Promise<Reduction> {
+  const layout = layoutOf(plan);
+  let rowsRead = 0;
+  const stage = (name: string, share: number) => {
+    options.signal?.throwIfAborted();
+    options.progress?.({ stage: name, rows: rowsRead, share });
+  };
+  stage("reading the log", 0);
+  const fingerprints = Promise.all(log.files.map((file) => fingerprint(file.path)));
+  // A failure is met where it is awaited; until then it must not count as unhandled.
+  fingerprints.catch(() => undefined);
+  await readRows(plan, layout, log, engine, dialect);
+  const perFile = await rowsPerFile(log.files.length, engine);
+  rowsRead = perFile.reduce((sum, n) => sum + n, 0);
+  const lists = await readLists(plan, layout, folder, engine);
+
+  if (layout.hasEventId) {
+    stage("looking for duplicates", 0.5);
+    await engine.run(copies(layout, dialect));
+    await engine.run(markDuplicates());
+  }
+  stage("enrolling units", 0.65);
+  const [range = {}] = await engine.query(timeRange());
+  const firstUs = wholeOrNull(range, "first_us");
+  const lastUs = wholeOrNull(range, "last_us");
+  const logEndUs = layout.hasTime ? await endOfLog(layout, engine) : null;
+  const key = enrolmentKey(plan, firstUs, lastUs);
+  await engine.run(seen(plan, layout, key));
+  if (layout.unitFilters.some((filter) => filter.kind === "at-enrolment")) await engine.run(atEnrolment(layout, key));
+  await engine.run(enrolments(plan, layout, key, logEndUs));
+
+  stage("adding up each unit", 0.75);
+  await engine.run(units(plan, layout, dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n), dialect));
+  stage("adding up cells", 0.9);
+  const metrics = await metricCells(plan, layout, engine, dialect);
+  const account = await ledger(plan, layout, engine);
+  const found = await facts(plan, layout, engine, logEndUs);
+  if (options.rejectsTo !== undefined) await writeRejects(options.rejectsTo, layout, log.files, engine);
+  const prints = await fingerprints;
+  stage("done", 1);
+  return {
+    engine: { name: engine.name, version: engine.version },
+    inputs: log.files.map((file, i) => ({
+      name: file.name,
+      bytes: prints[i]?.bytes ?? 0,
+      sha256: prints[i]?.sha256 ?? "",
+      rows: perFile[i] ?? 0,
+    })),
+    lists,
+    ...account,
+    facts: found,
+    metrics,
+  };
+}
+
+async function readRows(plan: Plan, layout: Layout, log: OpenLog, engine: Engine, dialect: Dialect): Promise<void> {
+  const zone = offsetsByLocalTime(plan.timezone);
+  for (const [i, group] of log.groups.entries()) {
+    const names = group.files.map((file) => log.files[file.index]?.name).join(", ");
+    try {
+      await engine.run(rows(plan, layout, group, i === 0 ? "create" : "insert", zone, dialect));
+    } catch (cause) {
+      throw new UnusableLog(`The engine could not read ${names}: ${firstLine(cause)}`, { cause });
+    }
+    if (group.format !== "parquet") {
+      await engine.run(unreadableRows(group));
+      await engine.run(sql`DROP TABLE reject_errors`);
+      await engine.run(sql`DROP TABLE reject_scans`);
+    }
+  }
+  const isReadable =
+    log.groups.length > 0 &&
+    (await engine.query(sql`SELECT count(*) AS rows FROM rows WHERE fate <> ${FATE.rejected}`)).some(
+      (row) => count(row, "rows") > 0,
+    );
+  if (!isReadable) {
+    const rejected = log.groups.length === 0 ? 0 : (await rowsPerFile(log.files.length, engine)).reduce((a, b) => a + b, 0);
+    throw new UnusableLog(
+      rejected === 0
+        ? "The log has no rows: its files are empty or hold only a header. Look at the paths in the plan's log."
+        : `None of the log's ${rejected} rows could be read. Look at the columns and the time format that the plan names.`,
+    );
+  }
+}
+
+async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {
+  const bins = await engine.query(timeBins(layout));
+  return logEnd(
+    bins.map((row) => ({
+      source: count(row, "source"),
+      rows: count(row, "rows"),
+      firstUs: whole(row, "first_us"),
+      lastUs: whole(row, "last_us"),
+      counted: row["counted"] === true,
+    })),
+  );
+}
+
+async function missingLists(source: PlanSource, folder: string): Promise<Problem[]> {
+  const problems = await Promise.all(
+    source.lists.map(async ({ filter, file }) =>
+      (await isFile(path.resolve(folder, file))) ? [] : [noSuchList(filter, file, await neighbours(file, folder))],
+    ),
+  );
+  return problems.flat();
+}
+
+const firstLine = (cause: unknown) => (cause instanceof Error ? (cause.message.split("\n")[0] ?? "") : String(cause));

@@ -1,0 +1,146 @@
+import type { Dialect } from "./dialect.ts";
+import { double, join, name, type Statement, sql } from "./sql.ts";
+
+/**
+ * Stage 9 and 10: exact power sums per variant and bucket (DESIGN 5). u = (x - pivot) / scale, t_k = u^k 2^60,
+ * high = floor(t), low = floor((t - high) 2^60 + 0.5): 64-bit terms, 128-bit sums, so no order, thread or engine changes one.
+ */
+
+/** One value per unit: how it is written, and what it is measured against. */
+export interface Measured {
+  /** u, a double in [-1, 1] or NULL, over a row of `units`. */
+  readonly u: Statement;
+  /** x itself, for smallest and largest; and whether an exact sum of it is wanted. */
+  readonly x: Statement;
+  readonly isDecimal: boolean;
+}
+
+const TWO_60 = double(2 ** 60);
+const ORDERS = [1, 2, 3, 4] as const;
+
+/** u of a decimal value: the correctly rounded double of the exact difference, over a power of two. */
+export function decimalValue(x: Statement, pivot: string, scale: number, dialect: Dialect): Measured {
+  const difference = sql`(${x} - CAST(${pivot} AS ${dialect.sumType}))`;
+  return { u: sql`(${dialect.toDouble(difference)}) / ${double(scale)}`, x, isDecimal: true };
+}
+
+export const doubleValue = (x: Statement, scale: number): Measured => ({ u: sql`${x} / ${double(scale)}`, x, isDecimal: false });
+
+/**
+ * Reads   units
+ * Gives   variant, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
+ */
+export function cells(values: readonly Measured[]): Statement {
+  // Three nested levels, so that each of u, its powers and their whole parts is computed once a unit.
+  const us = values.flatMap((value, i) => [sql`${value.u} AS ${name(`u${i}`)}`, sql`${value.x} AS ${name(`x${i}`)}`]);
+  const terms = values.flatMap((_, i) => {
+    const u = name(`u${i}`);
+    const powers = ORDERS.map((k) =>
+      product(Array.from({ length: k }, () => u)),
+    );
+    return [
+      name(`x${i}`),
+      ...ORDERS.map((k) => sql`${powers[k - 1] ?? u} * ${TWO_60} AS ${name(`t${i}_${k}`)}`),
+    ];
+  });
+  const sums = values.flatMap((value, i) => [
+    sql`count(${name(`x${i}`)}) AS ${name(`n${i}`)}`,
+    ...ORDERS.flatMap((k) => {
+      const t = name(`t${i}_${k}`);
+      return [
+        sql`coalesce(sum(CAST(floor(${t}) AS BIGINT)), 0) AS ${name(`h${i}_${k}`)}`,
+        sql`coalesce(sum(CAST(floor((${t} - floor(${t})) * ${TWO_60} + 0.5) AS BIGINT)), 0) AS ${name(`l${i}_${k}`)}`,
+      ];
+    }),
+    ...(value.isDecimal ? [sql`sum(${name(`x${i}`)}) AS ${name(`total${i}`)}`] : []),
+    sql`min(${name(`x${i}`)}) AS ${name(`least${i}`)}`,
+    sql`max(${name(`x${i}`)}) AS ${name(`most${i}`)}`,
+  ]);
+  return sql`
+    SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
+    FROM (
+      SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
+      FROM (SELECT ${list([sql`variant`, sql`bucket`, ...us])} FROM units)
+    )
+    GROUP BY variant, bucket
+    ORDER BY variant, bucket`;
+}
+
+/** Powers by repeated multiplication, left to right: ((u u) u) u. */
+function product(factors: readonly Statement[]): Statement {
+  const [first, ...rest] = factors;
+  if (first === undefined) throw new Error("a power without a factor");
+  return rest.reduce((product, factor) => sql`(${product} * ${factor})`, first);
+}
+
+/**
+ * What a pivot and a scale are worked out from: count, exact sum, smallest and largest per power-of-two class of |x|.
+ * Gives   part, class (NULL for 0), n, total, least, most
+ */
+export function classes(values: readonly Statement[], dialect: Dialect): Statement {
+  const parts = values.map(
+    (x, part) => sql`
+    SELECT ${part} AS part, CASE WHEN x <> 0 THEN ${dialect.powerClass(sql`x`)} END AS class,
+      count(*) AS n, sum(x) AS total, min(x) AS least, max(x) AS most
+    FROM (SELECT ${x} AS x FROM units)
+    WHERE x IS NOT NULL
+    GROUP BY 1, 2`,
+  );
+  return join(parts, "\nUNION ALL\n");
+}
+
+/** Exact totals per arm: n, sum of a value. Gives variant, and per value i: n<i>, total<i>. */
+export function totals(values: readonly Statement[]): Statement {
+  const sums = values.flatMap((x, i) => [sql`count(${x}) AS ${name(`n${i}`)}`, sql`sum(${x}) AS ${name(`total${i}`)}`]);
+  return sql`SELECT ${list([sql`variant`, ...sums])} FROM units GROUP BY variant`;
+}
+
+/** A value held down to a cap; NULL stays NULL (least() would make it the cap). */
+export const capped = (x: Statement, cap: string | null, dialect: Dialect): Statement =>
+  cap === null ? x : sql`CASE WHEN ${x} > CAST(${cap} AS ${dialect.sumType}) THEN CAST(${cap} AS ${dialect.sumType}) ELSE ${x} END`;
+
+/** The value at a rank, from the nearer end. */
+export function atRank(x: Statement, rank: bigint, n: bigint): Statement {
+  return rank * 2n > n
+    ? sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x DESC LIMIT 1 OFFSET ${n - rank}`
+    : sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
+}
+
+/** Units per variant, those without a value, and those above a cap. Gives variant, units, none<p>, over<p>. */
+export function leftOut(values: readonly Statement[], caps: readonly (string | null)[], dialect: Dialect): Statement {
+  const counts = values.flatMap((x, p) => {
+    const cap = caps[p] ?? null;
+    return [
+      sql`count(*) - count(${x}) AS ${name(`none${p}`)}`,
+      cap === null
+        ? sql`0 AS ${name(`over${p}`)}`
+        : sql`count(*) FILTER (WHERE ${x} > CAST(${cap} AS ${dialect.sumType})) AS ${name(`over${p}`)}`,
+    ];
+  });
+  return sql`SELECT ${list([sql`variant`, sql`count(*) AS units`, ...counts])} FROM units GROUP BY variant`;
+}
+
+/** A ratio's score d = (a - R b) / mean(b), R and mean(b) of the unit's own arm; NULL in an arm without either. */
+export function score(
+  a: Statement,
+  b: Statement,
+  arms: readonly ({ readonly ratio: number; readonly meanOfB: number } | null)[],
+  dialect: Dialect,
+): Statement {
+  const cases = arms.flatMap((arm, variant) =>
+    arm === null
+      ? []
+      : [
+          sql`WHEN ${variant} THEN ((${dialect.toDouble(a)}) - ${double(arm.ratio)} * (${dialect.toDouble(b)})) / ${double(arm.meanOfB)}`,
+        ],
+  );
+  return cases.length === 0 ? sql`CAST(NULL AS DOUBLE)` : sql`CASE variant ${join(cases, "\n")} END`;
+}
+
+/** Smallest and largest of some doubles over all units, to find their scales. */
+export function extremes(values: readonly Statement[]): Statement {
+  const ends = values.flatMap((x, i) => [sql`min(${x}) AS ${name(`least${i}`)}`, sql`max(${x}) AS ${name(`most${i}`)}`]);
+  return sql`SELECT ${list(ends)} FROM units`;
+}
+
+const list = (items: readonly Statement[]) => join(items, ", ");

@@ -1,0 +1,136 @@
+import type { Plan } from "../../plan/types.ts";
+import { FATE, type Layout, unitLineIds } from "../layout.ts";
+import { contentOrder } from "./duplicates.ts";
+import { join, name, type Statement, sql } from "./sql.ts";
+
+/**
+ * A row's place among those that may enrol its unit, as one integer: time first, then the variant in plan order (names
+ * that the plan lacks after those it has). min() of it settles time, ties and variant at once.
+ */
+interface Key {
+  readonly baseUs: bigint;
+  readonly places: bigint;
+  /** Whether the span of times needs 128 bits. */
+  readonly wide: boolean;
+}
+
+export function enrolmentKey(plan: Plan, firstUs: bigint | null, lastUs: bigint | null): Key {
+  let places = 2n;
+  while (places < BigInt(plan.variants.length) + 1n) places *= 2n;
+  const span = firstUs === null || lastUs === null ? 0n : lastUs - firstUs;
+  return { baseUs: firstUs ?? 0n, places, wide: (span + 1n) * places >= 1n << 62n };
+}
+
+function keyOf(key: Key): Statement {
+  const at = key.wide ? sql`CAST(coalesce(at_us, ${key.baseUs}) AS HUGEINT)` : sql`coalesce(at_us, ${key.baseUs})`;
+  return sql`(${at} - ${key.baseUs}) * ${key.places} + variant`;
+}
+
+/**
+ * Stage 4: the units seen, and the key of the row that enrols each.
+ * Reads   rows
+ * Writes  seen: unit, key (NULL: no row enrols it), named (a bit per variant of the plan that its rows name), rows, e<i>
+ *         (whether some row meets unit filter condition i)
+ */
+export function seen(plan: Plan, layout: Layout, key: Key): Statement {
+  const flags = layout.flags.map((_, i) => sql`bool_or(${name(`w${i}`)}) AS ${name(`e${i}`)}`);
+  return sql`
+    CREATE TEMP TABLE seen AS
+    SELECT ${list([
+      sql`unit`,
+      sql`min(${keyOf(key)}) FILTER (WHERE enrols) AS key`,
+      sql`bit_or(CASE WHEN variant < ${plan.variants.length} THEN CAST(1 AS BIGINT) << variant ELSE 0 END) AS named`,
+      sql`count(*) AS rows`,
+      ...flags,
+    ])}
+    FROM rows
+    WHERE fate = ${FATE.seen}
+    GROUP BY unit`;
+}
+
+/**
+ * Stage 5: each unit's enrolling row, for what is judged at enrolment. Several rows of a unit may stand at its key: the
+ * first in canonical order is taken, and only such units are ordered.
+ * Reads   rows, seen
+ * Writes  at_enrolment: unit, a<i> (unit filter condition i on the enrolling row)
+ */
+export function atEnrolment(layout: Layout, key: Key): Statement {
+  const flags = layout.flags.map((_, i) => sql`${name(`w${i}`)} AS ${name(`a${i}`)}`);
+  const order = join([sql`other_variant ASC NULLS LAST`, ...contentOrder(layout)], ", ");
+  return sql`
+    CREATE TEMP TABLE at_enrolment AS
+    WITH first AS MATERIALIZED (
+      SELECT r.*
+      FROM rows AS r
+      JOIN seen AS s ON s.unit = r.unit AND s.key = ${keyOf(key)}
+      WHERE r.fate = ${FATE.seen} AND r.enrols
+    ), tied AS (
+      SELECT unit FROM first GROUP BY unit HAVING count(*) > 1
+    )
+    SELECT ${list([sql`unit`, ...flags])}
+    FROM first
+    WHERE unit NOT IN (SELECT unit FROM tied)
+    UNION ALL
+    SELECT ${list([sql`unit`, ...flags])}
+    FROM (
+      SELECT *, row_number() OVER (PARTITION BY unit ORDER BY ${order}) AS place
+      FROM first
+      WHERE unit IN (SELECT unit FROM tied)
+    )
+    WHERE place = 1`;
+}
+
+/**
+ * Stage 6: each unit and the line on which it ends (DESIGN 4, rule 6), first that applies.
+ * Reads   seen, at_enrolment (where a filter judges at enrolment), list_<i>
+ * Writes  enrolments: unit, rows, enrolled_us, variant, switched, line (index into unitLineIds)
+ */
+export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigint | null): Statement {
+  const variants = plan.variants.length;
+  const ids = unitLineIds(plan);
+  const line = (id: string) => ids.indexOf(id);
+  const { fromUs, beforeUs } = plan.enrolment;
+  const isOutside = [
+    ...(fromUs === null ? [] : [sql`enrolled_us < ${fromUs}`]),
+    ...(beforeUs === null ? [] : [sql`enrolled_us >= ${beforeUs}`]),
+  ];
+  const filters = layout.unitFilters.map((filter) => {
+    const condition =
+      filter.kind === "listed"
+        ? sql`unit IN (SELECT id FROM ${name(`list_${filter.list}`)})`
+        : name(`${filter.kind === "ever" ? "e" : "a"}${filter.flag}`);
+    return sql`WHEN ${condition} THEN ${line(`filter:${filter.name}`)}`;
+  });
+  const cases = [
+    sql`WHEN key IS NULL THEN ${line("not-enrolled")}`,
+    ...(isOutside.length === 0 ? [] : [sql`WHEN ${join(isOutside, " OR ")} THEN ${line("outside-enrolment")}`]),
+    sql`WHEN variant = ${variants} THEN ${line("unknown-variant")}`,
+    ...(plan.enrolment.inTwoVariants === "exclude" ? [sql`WHEN switched THEN ${line("switched")}`] : []),
+    ...filters,
+    ...(plan.followUp?.incomplete === "exclude" && logEndUs !== null
+      ? [sql`WHEN enrolled_us + ${followUpUs(plan)} > ${logEndUs} THEN ${line("follow-up")}`]
+      : []),
+  ];
+  const usesEnrolment = layout.unitFilters.some((filter) => filter.kind === "at-enrolment");
+  return sql`
+    CREATE TEMP TABLE enrolments AS
+    SELECT unit, rows, enrolled_us, variant, switched,
+      CAST(CASE ${join(cases, "\n")} ELSE ${line("analysed")} END AS SMALLINT) AS line
+    FROM (
+      SELECT ${list([
+        sql`s.*`,
+        sql`CAST(s.key // ${key.places} AS BIGINT) + ${key.baseUs} AS enrolled_us`,
+        sql`CAST(s.key % ${key.places} AS SMALLINT) AS variant`,
+        sql`bit_count(named) > 1 AS switched`,
+        ...(usesEnrolment ? [sql`a.* EXCLUDE (unit)`] : []),
+      ])}
+      FROM seen AS s ${usesEnrolment ? sql`LEFT JOIN at_enrolment AS a ON a.unit = s.unit` : sql``}
+    )`;
+}
+
+/** Length of follow-up in microseconds; days are of 24 hours. */
+export function followUpUs(plan: Plan): bigint {
+  return BigInt(Math.round((plan.followUp?.days ?? 0) * 86_400_000_000));
+}
+
+const list = (items: readonly Statement[]) => join(items, ", ");

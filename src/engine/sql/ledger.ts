@@ -1,0 +1,70 @@
+import { FATE, type Layout } from "../layout.ts";
+import { join, name, type Statement, sql } from "./sql.ts";
+
+/** Counts for the ledger and the soundness checks. All read tables of a few stages; none writes. */
+
+export const rowsByFate = (): Statement => sql`SELECT fate, count(*) AS rows FROM rows GROUP BY fate`;
+export const rowsByFile = (): Statement => sql`SELECT file, count(*) AS rows FROM rows GROUP BY file`;
+export const rowsByReason = (): Statement => sql`
+  SELECT reason, count(*) AS rows FROM rows WHERE fate = ${FATE.rejected} GROUP BY reason`;
+
+export const timeRange = (): Statement => sql`
+  SELECT min(at_us) AS first_us, max(at_us) AS last_us FROM rows WHERE fate = ${FATE.seen}`;
+
+export const unitsByLine = (): Statement => sql`
+  SELECT line, variant, count(*) AS units, sum(rows) AS rows FROM enrolments GROUP BY line, variant`;
+
+/** Rows of the analysed units, by where they fall. */
+export const analysedRows = (): Statement => sql`
+  SELECT coalesce(sum(before_rows), 0) AS before_rows, coalesce(sum(after_rows), 0) AS after_rows,
+    coalesce(sum(inside_rows), 0) AS inside_rows
+  FROM units`;
+
+/** Enrolled units (past the line unknown-variant) by first variant, and of them the switched. */
+export const enrolledByVariant = (unknownVariantLine: number): Statement => sql`
+  SELECT variant, count(*) AS units, count(*) FILTER (WHERE switched) AS switched
+  FROM enrolments WHERE line > ${unknownVariantLine} GROUP BY variant`;
+
+/** Enrolled units by variant that have a row of a fate. */
+export const unitsWithFate = (fate: number, unknownVariantLine: number): Statement => sql`
+  SELECT e.variant, count(*) AS units
+  FROM (SELECT DISTINCT unit FROM rows WHERE fate = ${fate} AND unit IS NOT NULL) AS r
+  JOIN enrolments AS e ON e.unit = r.unit
+  WHERE e.line > ${unknownVariantLine}
+  GROUP BY e.variant`;
+
+/** First and last enrolment of the analysed. */
+export const enrolmentRange = (analysedLine: number): Statement => sql`
+  SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line = ${analysedLine}`;
+
+/** Values that readable rows hold, commonest first. */
+export const eventCounts = (limit: number): Statement => sql`
+  SELECT event AS value, count(*) AS rows FROM rows
+  WHERE fate <> ${FATE.rejected} AND event IS NOT NULL
+  GROUP BY event ORDER BY rows DESC, value LIMIT ${limit}`;
+
+export const variantCounts = (): Statement => sql`
+  SELECT variant, count(*) AS rows FROM rows
+  WHERE fate <> ${FATE.rejected} AND variant IS NOT NULL
+  GROUP BY variant`;
+
+export const otherVariantCounts = (limit: number): Statement => sql`
+  SELECT other_variant AS value, count(*) AS rows FROM rows
+  WHERE fate <> ${FATE.rejected} AND other_variant IS NOT NULL
+  GROUP BY other_variant ORDER BY rows DESC, value LIMIT ${limit}`;
+
+/** Which of some events a readable row has. */
+export const eventsThatOccur = (events: Statement): Statement => sql`
+  SELECT DISTINCT event AS value FROM rows WHERE fate <> ${FATE.rejected} AND event IN (${events})`;
+
+/** Counted rows of a metric part, and those without a number. */
+export function countedRows(layout: Layout): Statement {
+  const parts = layout.parts.map(
+    (_, p) => sql`coalesce(sum(${name(`r${p}`)}), 0) AS ${name(`r${p}`)}, coalesce(sum(${name(`q${p}`)}), 0) AS ${name(`q${p}`)}`,
+  );
+  return sql`SELECT ${join(parts, ", ")} FROM units`;
+}
+
+/** Rejected rows for rejects.csv, in an order that no thread changes. */
+export const rejectedRows = (): Statement => sql`
+  SELECT file, reason, text FROM rows WHERE fate = ${FATE.rejected} ORDER BY file, reason, text`;

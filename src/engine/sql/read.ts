@@ -1,0 +1,160 @@
+import type { ColumnKind, FileGroup } from "../source.ts";
+import type { Dialect } from "./dialect.ts";
+import { join, name, type Statement, sql } from "./sql.ts";
+
+/**
+ * Readers: one SELECT a group of like files.
+ * Writes  file (index into the inputs), readable, and c0.. for the wanted columns in their order, NULL where the group
+ *         lacks one. A record that the reader cannot cut into cells does not come out here: it is in reject_errors.
+ */
+
+/** Delimiter of a reader that is to give whole lines: JSON text holds no control character. */
+const NO_DELIMITER = "\u0001";
+// Nested, since AND may look at the type of what is no JSON, which is an error.
+const IS_OBJECT = sql`CASE WHEN json_valid(line) THEN json_type(line) = 'OBJECT' ELSE FALSE END`;
+const LONGEST_LINE = 32 * 1024 * 1024;
+
+export function read(group: FileGroup, wanted: readonly string[]): Statement {
+  switch (group.format) {
+    case "csv":
+      return readDelimited(group, wanted, ",");
+    case "tsv":
+      return readDelimited(group, wanted, "\t");
+    case "ndjson":
+      return readJson(group, wanted);
+    case "parquet":
+      return readParquet(group, wanted);
+  }
+}
+
+/** How each wanted column arrives. */
+export function kindsOf(group: FileGroup, wanted: readonly string[]): ColumnKind[] {
+  return wanted.map((column) => group.kinds[group.columns.indexOf(column)] ?? "text");
+}
+
+/** The lines of a file as they stand, whatever its compression; `limit` 0 for all. */
+export function lines(path: string, limit: number): Statement {
+  const some = limit === 0 ? sql`` : sql`LIMIT ${limit}`;
+  return sql`SELECT line FROM ${lineReader([path])} ${some}`;
+}
+
+/** Keys of the JSON objects in some files; the first `limit` lines, 0 for all. */
+export function jsonKeys(paths: readonly string[], limit: number): Statement {
+  const some = limit === 0 ? sql`` : sql`LIMIT ${limit}`;
+  return sql`
+    SELECT DISTINCT unnest(CASE WHEN ${IS_OBJECT} THEN json_keys(line) END) AS key
+    FROM (SELECT line FROM ${lineReader(paths)} ${some})`;
+}
+
+export const parquetColumns = (path: string): Statement => sql`DESCRIBE SELECT * FROM read_parquet(${path})`;
+
+/** Top-level names as the file has them: the engine's own differ where two are alike but for case. */
+export const parquetNames = (path: string): Statement => sql`SELECT name, num_children FROM parquet_schema(${path})`;
+
+function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: string): Statement {
+  // All columns as text, by position: no detection, and names that differ in case only stay apart.
+  const columns = group.columns.map((_, i) => sql`${`c${i}`}: 'VARCHAR'`);
+  const picked = wanted.map((column, i) => {
+    const at = group.columns.indexOf(column);
+    return at < 0 ? sql`CAST(NULL AS VARCHAR) AS ${name(`c${i}`)}` : sql`r.${name(`c${at}`)} AS ${name(`c${i}`)}`;
+  });
+  return sql`
+    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...picked])}
+    FROM read_csv(${paths(group)}, auto_detect = false, header = true, columns = {${join(columns, ", ")}},
+      delim = ${delimiter}, quote = '"', escape = '"', nullstr = '', strict_mode = true, store_rejects = true,
+      max_line_size = ${LONGEST_LINE}) AS r`;
+}
+
+function readJson(group: FileGroup, wanted: readonly string[]): Statement {
+  const picked = wanted.map((column, i) => sql`${jsonText(column)} AS ${name(`c${i}`)}`);
+  return sql`
+    SELECT ${comma([sql`file`, sql`readable`, ...picked])}
+    FROM (
+      SELECT file, ${IS_OBJECT} AS readable, CASE WHEN ${IS_OBJECT} THEN line END AS line
+      FROM (
+        SELECT ${comma([fileIndex(group), sql`line`])}
+        FROM ${lineReader(group.files.map((file) => file.path))} AS r
+      )
+      WHERE trim(line) <> ''
+    )`;
+}
+
+/**
+ * A value's text. Numbers with a fraction or exponent are cut from the line itself: the JSON reader passes them through
+ * a double and gives 123456789.12345679 for 123456789.123456789. What is cut must be the same double (a nested object may
+ * hold the same key).
+ */
+function jsonText(column: string): Statement {
+  const key = JSON.stringify(column);
+  const at = `$.${key}`;
+  const pattern = `${escapeRegExp(key)}[ \\t]*:[ \\t]*(-?[0-9]+([.][0-9]+)?([eE][+-]?[0-9]+)?)`;
+  const plain = sql`json_extract_string(line, ${at})`;
+  const cut = sql`lower(regexp_extract(line, ${pattern}, 1))`;
+  return sql`CASE WHEN json_type(line, ${at}) = 'DOUBLE' AND try_cast(${cut} AS DOUBLE) = try_cast(${plain} AS DOUBLE)
+    THEN ${cut} ELSE ${plain} END`;
+}
+
+function readParquet(group: FileGroup, wanted: readonly string[]): Statement {
+  const picked = wanted.map((column, i) => {
+    const engineName = group.engineNames[group.columns.indexOf(column)];
+    return engineName === undefined
+      ? sql`CAST(NULL AS VARCHAR) AS ${name(`c${i}`)}`
+      : sql`r.${name(engineName)} AS ${name(`c${i}`)}`;
+  });
+  return sql`
+    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...picked])}
+    FROM read_parquet(${paths(group)}) AS r`;
+}
+
+function lineReader(files: readonly string[]): Statement {
+  return sql`read_csv([${join(files.map((file) => sql`${file}`), ", ")}], auto_detect = false, header = false,
+    columns = {line: 'VARCHAR'}, delim = ${NO_DELIMITER}, quote = '', escape = '', nullstr = '',
+    strict_mode = false, max_line_size = ${LONGEST_LINE}, store_rejects = true)`;
+}
+
+function fileIndex(group: FileGroup): Statement {
+  const indexes = group.files.map((file) => sql`${file.index}`);
+  const [only] = indexes;
+  if (indexes.length === 1 && only !== undefined) return sql`CAST(${only} AS INTEGER) AS file`;
+  return sql`CAST([${join(indexes, ", ")}][r.file_index + 1] AS INTEGER) AS file`;
+}
+
+const paths = (group: FileGroup) => sql`[${join(group.files.map((file) => sql`${file.path}`), ", ")}]`;
+const comma = (items: readonly Statement[]) => join(items, ", ");
+const escapeRegExp = (text: string) => text.replace(/[\\^$.*+?()[\]{}|]/g, "\\$&");
+
+/** A column's text: what `where` compares, and what units and variants are called. Missing is NULL. */
+export function asText(column: Statement, kind: ColumnKind): Statement {
+  switch (kind) {
+    case "text":
+      return sql`nullif(${column}, '')`;
+    case "float":
+      // A floating-point column stands for its shortest decimal: 1 and not 1.0.
+      return sql`regexp_replace(CAST(${column} AS VARCHAR), '[.]0$', '')`;
+    default:
+      return sql`nullif(CAST(${column} AS VARCHAR), '')`;
+  }
+}
+
+/** A numeric column's exact value, NULL when it is missing, no number or out of range. */
+export function asValue(column: Statement, kind: ColumnKind, dialect: Dialect): Statement {
+  if (kind === "whole" || kind === "decimal") return sql`try_cast(${column} AS ${dialect.valueType})`;
+  return dialect.number(asText(column, kind));
+}
+
+/** Clock time and stated offset, both in microseconds; an offset of NULL means the plan's zone. */
+export function asTime(column: Statement, kind: ColumnKind, dialect: Dialect): { clockUs: Statement; offsetUs: Statement } {
+  switch (kind) {
+    case "instant":
+      return { clockUs: sql`CASE WHEN isfinite(${column}) THEN epoch_us(${column}) END`, offsetUs: sql`CAST(0 AS BIGINT)` };
+    case "timestamp":
+    case "date": {
+      const plain = sql`CAST(${column} AS TIMESTAMP)`;
+      return { clockUs: sql`CASE WHEN isfinite(${plain}) THEN epoch_us(${plain}) END`, offsetUs: sql`CAST(NULL AS BIGINT)` };
+    }
+    default: {
+      const text = asText(column, kind);
+      return { clockUs: dialect.clockUs(text), offsetUs: sql`CAST(${dialect.statedOffsetUs(text)} AS BIGINT)` };
+    }
+  }
+}

@@ -1,0 +1,141 @@
+import type { Plan } from "../../plan/types.ts";
+import { FATE, type Layout } from "../layout.ts";
+import type { FileGroup } from "../source.ts";
+import type { Step } from "../zone.ts";
+import { type Dialect, localOffset } from "./dialect.ts";
+import { asText, asTime, asValue, kindsOf, read } from "./read.ts";
+import { join, name, type Statement, sql } from "./sql.ts";
+import { matches, where } from "./where.ts";
+
+/** Why a row is rejected, first that applies; REASON.notNumber + c and REASON.outOfRange + c name a column. */
+export const REASON = { none: 0, unreadable: 1, noUnit: 2, noTime: 3, notNumber: 1000, outOfRange: 2000 } as const;
+
+/**
+ * Stage 1, once a group of like files: one row a record of the log, typed, tested and with its first fate.
+ * Reads   the files
+ * Writes  rows: file, source, unit, at_us, event, event_id, variant (index in the plan, the number of variants for a name
+ *         the plan lacks, NULL for none), other_variant (that name), x<c>/v<c> columns, m<i> metric conditions, w<i> unit
+ *         filter conditions, enrols, reason, fate (FATE; a row filter's is firstFilter + its index), text (of a rejected row)
+ * A record that cannot be cut into cells is added by stage 2.
+ */
+export function rows(
+  plan: Plan,
+  layout: Layout,
+  group: FileGroup,
+  into: "create" | "insert",
+  zone: readonly Step<bigint>[],
+  dialect: Dialect,
+): Statement {
+  const x = (column: string) => name(`x${layout.columns.indexOf(column)}`);
+  const isKept = sql`reason = ${REASON.none}`;
+  const filters = layout.rowFilters.map(
+    (filter, i) => sql`WHEN ${where(filter.where, x, dialect)} THEN ${FATE.firstFilter + i}`,
+  );
+  const conditions = [
+    ...layout.matches.map((match, i) => sql`${matches(match, sql`event`, x, dialect)} AS ${name(`m${i}`)}`),
+    ...layout.flags.map((tests, i) => sql`(${where(tests, x, dialect)}) AS ${name(`w${i}`)}`),
+  ];
+  const enrolmentEvent =
+    plan.enrolment.event === null ? sql`TRUE` : sql`coalesce(event = ${plan.enrolment.event}, FALSE)`;
+  return sql`
+    ${into === "create" ? sql`CREATE TEMP TABLE rows AS` : sql`INSERT INTO rows`}
+    SELECT file, source, unit, at_us, event, event_id, ${variantCode(plan)} AS variant,
+      CASE WHEN ${variantCode(plan)} = ${plan.variants.length} THEN variant END AS other_variant,
+      ${list([...storedColumns(layout).map((column) => sql`${column}`), ...conditions])},
+      variant IS NOT NULL AND ${enrolmentEvent} AS enrols,
+      CAST(reason AS SMALLINT) AS reason,
+      CAST(CASE WHEN NOT ${isKept} THEN ${FATE.rejected} ${join(filters, "\n")} ELSE ${FATE.seen} END AS SMALLINT) AS fate,
+      CASE WHEN NOT ${isKept} THEN concat_ws(', ', ${list(rejectedText(layout))}) END AS text
+    FROM (
+      SELECT *, ${reason(layout, dialect)} AS reason
+      FROM (
+        SELECT * EXCLUDE (clock_us, offset_us), clock_us - coalesce(offset_us, ${localOffset(sql`clock_us`, zone)}) AS at_us
+        FROM (${typedRows(plan, layout, group, dialect)})
+      )
+    )`;
+}
+
+/** Columns that later stages order rows by: numbers by value, all else as text. */
+export function storedColumns(layout: Layout): Statement[] {
+  return layout.columns.slice(0, Math.max(layout.ordered, 0)).map((_, c) => stored(layout, c));
+}
+
+export const stored = (layout: Layout, c: number): Statement =>
+  layout.numeric[c] === true ? name(`v${c}`) : name(`x${c}`);
+
+function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialect): Statement {
+  const roles = plan.log[group.source]?.columns;
+  if (roles === undefined) throw new Error(`no entry ${group.source} of the log`);
+  const wanted = [
+    ...new Set([roles.unit, roles.time, roles.event, roles.variant, roles.eventId, ...layout.columns]),
+  ].filter((column) => column !== null);
+  const kinds = kindsOf(group, wanted);
+  const at = (column: string) => wanted.indexOf(column);
+  const raw = (column: string) => name(`c${at(column)}`);
+  const kind = (column: string) => kinds[at(column)] ?? "text";
+  const text = (column: string | null) =>
+    column === null ? sql`CAST(NULL AS VARCHAR)` : asText(raw(column), kind(column));
+  const time =
+    roles.time === null
+      ? { clockUs: sql`CAST(NULL AS BIGINT)`, offsetUs: sql`CAST(NULL AS BIGINT)` }
+      : asTime(raw(roles.time), kind(roles.time), dialect);
+  const columns = layout.columns.flatMap((column, c) => [
+    sql`${text(column)} AS ${name(`x${c}`)}`,
+    ...(layout.numeric[c] === true
+      ? [sql`${asValue(raw(column), kind(column), dialect)} AS ${name(`v${c}`)}`]
+      : []),
+  ]);
+  return sql`
+    SELECT file, CAST(${group.source} AS SMALLINT) AS source, readable, ${text(roles.unit)} AS unit,
+      ${time.clockUs} AS clock_us, ${time.offsetUs} AS offset_us, ${text(roles.time)} AS time_text,
+      ${text(roles.event)} AS event, ${text(roles.eventId)} AS event_id,
+      ${list([sql`${text(roles.variant)} AS variant`, ...columns])}
+    FROM (${read(group, wanted)})`;
+}
+
+function reason(layout: Layout, dialect: Dialect): Statement {
+  const values = layout.columns.flatMap((_, c) => {
+    if (layout.numeric[c] !== true) return [];
+    const x = name(`x${c}`);
+    const number = dialect.isNumber(x);
+    return [
+      sql`WHEN ${x} IS NOT NULL AND ${name(`v${c}`)} IS NULL
+        THEN CASE WHEN ${number} THEN ${REASON.outOfRange + c} ELSE ${REASON.notNumber + c} END`,
+    ];
+  });
+  const noTime = layout.hasTime ? sql`WHEN at_us IS NULL THEN ${REASON.noTime}` : sql``;
+  return sql`CASE WHEN NOT readable THEN ${REASON.unreadable} WHEN unit IS NULL THEN ${REASON.noUnit} ${noTime}
+    ${join(values, "\n")} ELSE ${REASON.none} END`;
+}
+
+function variantCode(plan: Plan): Statement {
+  const cases = plan.variants.map((variant, i) => sql`WHEN ${variant.name} THEN ${i}`);
+  return sql`CAST(CASE WHEN variant IS NULL THEN NULL ELSE CASE variant ${join(cases, "\n")} ELSE ${plan.variants.length} END END AS SMALLINT)`;
+}
+
+/** What rejects.csv shows of a row that was cut into cells: those that the plan names. */
+function rejectedText(layout: Layout): Statement[] {
+  return [sql`time_text`, sql`event`, sql`variant`, ...layout.columns.map((_, c) => name(`x${c}`))];
+}
+
+const list = (items: readonly Statement[]) => join(items, ", ");
+
+/**
+ * Stage 2, after each group: records that the reader could not cut into cells join the rows, as rejected. One bad record may be reported
+ * several times, so each place counts once.
+ * Reads   reject_errors, reject_scans (the reader's)
+ * Writes  rows
+ */
+export function unreadableRows(group: FileGroup): Statement {
+  const files = group.files.map(({ path, index }) => sql`(${path}, ${index})`);
+  return sql`
+    INSERT INTO rows (file, source, reason, fate, text)
+    SELECT f.file, ${group.source}, ${REASON.unreadable}, ${FATE.rejected}, e.text
+    FROM (
+      SELECT scan_id, file_id, line, line_byte_position, min(csv_line) AS text
+      FROM reject_errors
+      GROUP BY scan_id, file_id, line, line_byte_position
+    ) AS e
+    JOIN reject_scans AS s ON s.scan_id = e.scan_id AND s.file_id = e.file_id
+    JOIN (VALUES ${list(files)}) AS f(path, file) ON f.path = s.file_path`;
+}

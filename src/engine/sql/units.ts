@@ -1,0 +1,103 @@
+import type { Plan } from "../../plan/types.ts";
+import { FATE, type Layout, type PartLayout, unitLineIds } from "../layout.ts";
+import type { DayRun, Step } from "../zone.ts";
+import { type Dialect, localDay } from "./dialect.ts";
+import { followUpUs } from "./enrolments.ts";
+import { join, name, type Statement, sql } from "./sql.ts";
+
+/**
+ * Stage 7: one row per analysed unit.
+ * Reads   rows, enrolments
+ * Writes  units: variant, bucket, before_rows, after_rows, inside_rows, and per metric part p: x<p> (its value, NULL where
+ *         the unit is left out), r<p> (counted rows), q<p> (of these, rows without a number)
+ * Every analysed unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
+ * rowid: a number, where the id is text.
+ */
+export function units(
+  plan: Plan,
+  layout: Layout,
+  days: readonly Step<DayRun>[],
+  dialect: Dialect,
+): Statement {
+  const analysed = unitLineIds(plan).length - 1;
+  const end =
+    plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
+  const place = layout.hasTime
+    ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END`
+    : sql`0`;
+  const aggregates = layout.parts.flatMap((part, p) => [
+    sql`${aggregate(part, days, dialect)} AS ${name(`s${p}`)}`,
+    sql`count(*) FILTER (WHERE ${counted(part)}) AS ${name(`r${p}`)}`,
+    ...(part.value === null
+      ? []
+      : [sql`count(*) FILTER (WHERE ${counted(part)} AND ${name(`v${part.value}`)} IS NULL) AS ${name(`q${p}`)}`]),
+  ]);
+  const values = layout.parts.flatMap((part, p) => [
+    sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`,
+    name(`r${p}`),
+    part.value === null ? sql`0 AS ${name(`q${p}`)}` : name(`q${p}`),
+  ]);
+  return sql`
+    CREATE TEMP TABLE units AS
+    SELECT ${list([sql`e.variant`, sql`${dialect.bucket(sql`e.unit`)} AS bucket`, sql`before_rows`, sql`after_rows`, sql`inside_rows`, ...values])}
+    FROM (
+      SELECT ${list([
+        sql`id`,
+        sql`count(*) FILTER (WHERE place < 0) AS before_rows`,
+        sql`count(*) FILTER (WHERE place > 0) AS after_rows`,
+        sql`count(*) FILTER (WHERE place = 0) AS inside_rows`,
+        ...aggregates,
+      ])}
+      FROM (
+        SELECT e.rowid AS id, ${place} AS place, r.*
+        FROM rows AS r
+        JOIN enrolments AS e ON e.unit = r.unit
+        WHERE r.fate = ${FATE.seen} AND e.line = ${analysed}
+      )
+      GROUP BY id
+    ) AS s
+    JOIN enrolments AS e ON e.rowid = s.id`;
+}
+
+const counted = (part: PartLayout) => sql`place = 0 AND ${name(`m${part.match}`)}`;
+
+function aggregate(part: PartLayout, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
+  const { aggregate } = part.part;
+  const value = name(`v${part.value ?? 0}`);
+  const where = counted(part);
+  switch (aggregate.kind) {
+    case "count":
+      return sql`count(*) FILTER (WHERE ${where})`;
+    case "days":
+      return sql`count(DISTINCT ${localDay(sql`at_us`, days)}) FILTER (WHERE ${where})`;
+    case "sum":
+      return sql`sum(${value}) FILTER (WHERE ${where})`;
+    case "max":
+      return sql`max(${value}) FILTER (WHERE ${where})`;
+    case "min":
+      return sql`min(${value}) FILTER (WHERE ${where})`;
+    case "first":
+      return dialect.firstValue(value, sql`at_us`, where);
+    case "last":
+      return dialect.lastValue(value, sql`at_us`, where);
+  }
+}
+
+/** A unit's value of a part: 0 or left out without rows; of max, min, first, last also when no row holds a number. */
+function unitValue(plan: Plan, part: PartLayout, p: number): Statement {
+  const metric = plan.metrics[part.metric];
+  if (metric === undefined) throw new Error(`no metric ${part.metric}`);
+  const hasRows = sql`${name(`r${p}`)} > 0`;
+  if (metric.summary === "proportion") {
+    const none = metric.withoutRows === "leave-out" ? sql`NULL` : sql`0`;
+    return sql`CASE WHEN ${hasRows} THEN 1 ELSE ${none} END`;
+  }
+  const sum = name(`s${p}`);
+  if (metric.withoutRows === "zero") return sql`coalesce(${sum}, 0)`;
+  const { kind } = part.part.aggregate;
+  return kind === "count" || kind === "days" || kind === "sum"
+    ? sql`CASE WHEN ${hasRows} THEN coalesce(${sum}, 0) END`
+    : sum;
+}
+
+const list = (items: readonly Statement[]) => join(items, ", ");

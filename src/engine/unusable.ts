@@ -1,0 +1,4 @@
+/** The log is there but cannot be used: exit status 3. The message is for the user, cause and remedy included. */
+export class UnusableLog extends Error {
+  override readonly name = "UnusableLog";
+}

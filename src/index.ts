@@ -1,0 +1,92 @@
+/** The library entry: a plan in, a decision report out. */
+import { createHash } from "node:crypto";
+import { readFile } from "node:fs/promises";
+import path from "node:path";
+import { arms } from "./cells/index.ts";
+import { checks as soundnessChecks } from "./checks/index.ts";
+import { conclusion as concluded, effects as allEffects } from "./decision/index.ts";
+import { type Progress, type Reduction, reduce, UnusableLog } from "./engine/index.ts";
+import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { openFolder } from "./report/folder.ts";
+import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
+import { version } from "./version.ts";
+
+export type { Progress, ReportJson };
+export { planJsonSchema, reportJsonSchema, version };
+
+export interface CloseoutOptions {
+  /** The report's folder; without it out/<experiment> in the current folder. */
+  readonly out?: string | undefined;
+  readonly threads?: number | undefined;
+  /** As DuckDB writes sizes: "2GB". */
+  readonly memory?: string | undefined;
+  readonly progress?: ((progress: Progress) => void) | undefined;
+  readonly signal?: AbortSignal | undefined;
+}
+
+export type Outcome =
+  | {
+      readonly status: 0;
+      readonly report: ReportJson;
+      /** The conclusion and a short table, as plain text. */
+      readonly terminal: string;
+      readonly folder: string;
+      readonly files: readonly string[];
+    }
+  | { readonly status: 2 | 3; readonly text: string };
+
+/**
+ * Reads a plan and its log, and writes the report's files.
+ * @returns status 2 when the plan or a file that it names is wrong, 3 when the log cannot be used; nothing is written then
+ * @throws when the signal aborts, or for a fault of this program; nothing is left half written
+ */
+export async function closeout(planPath: string, options: CloseoutOptions = {}): Promise<Outcome> {
+  let planText: string;
+  try {
+    planText = await readFile(planPath, "utf8");
+  } catch (error) {
+    return { status: 2, text: unreadablePlan(planPath, (error as NodeJS.ErrnoException).code ?? "unknown") };
+  }
+  const loaded = loadPlan(planText);
+  const plan = "plan" in loaded ? loaded.plan : null;
+  const planProblems = "problems" in loaded ? loaded.problems : [];
+  const folder = plan === null ? null : await openFolder(plan.experiment, options.out);
+  if (folder !== null && "refused" in folder) return { status: 2, text: folder.refused };
+  try {
+    const reduced = await reduce(plan, loaded.source, path.dirname(path.resolve(planPath)), {
+      ...options,
+      rejectsTo: folder?.staged("rejects.csv"),
+    });
+    if (plan === null || folder === null || "problems" in reduced) {
+      const problems = [...planProblems, ...("problems" in reduced ? reduced.problems : [])];
+      return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
+    }
+    const rendered = await decisionReport(plan, planText, reduced.reduction);
+    options.signal?.throwIfAborted();
+    const written = await folder.keep(rendered.files);
+    const terminal = rendered.terminal({
+      report: path.join(folder.shown, "report.html"),
+      summary: path.join(folder.shown, "summary.md"),
+    });
+    return { status: 0, report: rendered.json, terminal, folder: folder.path, files: written };
+  } catch (error) {
+    if (error instanceof UnusableLog) return { status: 3, text: error.message };
+    throw error;
+  } finally {
+    await folder?.discard();
+  }
+}
+
+/** From counts and cells to the report's files; no file is read or written but the templates. */
+function decisionReport(plan: Plan, planText: string, reduction: Reduction): Promise<ReportFiles> {
+  const armsByMetric = plan.metrics.map((metric, m) => {
+    const cells = reduction.metrics[m];
+    if (cells === undefined) throw new Error(`no cells for metric ${metric.name}`);
+    return arms(metric, cells, plan.variants.length);
+  });
+  const checks = soundnessChecks(plan, reduction);
+  const effects = allEffects(plan, armsByMetric);
+  const conclusion = concluded(plan, effects, checks, reduction);
+  const planSha256 = createHash("sha256").update(planText).digest("hex");
+  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, conclusion });
+}
