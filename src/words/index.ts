@@ -7,6 +7,7 @@ export { type Day, dateSpan, dateText } from "./dates.ts";
 export {
   type Comparative,
   endInWords,
+  endSize,
   estimateInWords,
   estimateSize,
   HIGHER,

@@ -11,7 +11,8 @@ export interface Interval {
 export type Scale =
   | { readonly kind: "percent" }
   | { readonly kind: "points" }
-  | { readonly kind: "amount"; readonly unit: string | null };
+  /** `places` where the caller has chosen them: whole units of many. */
+  | { readonly kind: "amount"; readonly unit: string | null; readonly places?: number };
 
 /** The words for above and below: more and fewer of what is counted, higher and lower of a mean. */
 export interface Comparative {
@@ -101,9 +102,22 @@ export function endInWords(
   return value === null ? null : writer(interval, scale, marks).compared(value, words);
 }
 
+/** The size of one end alone: "13.7%", for "a rise of more than 13.7%". Null ends have no text. */
+export function endSize(
+  interval: Interval,
+  end: "low" | "high",
+  scale: Scale,
+  marks: readonly number[] = [],
+): string | null {
+  const value = interval[end];
+  if (value === null) return null;
+  const write = writer(interval, scale, marks);
+  return write.last(write.size(value));
+}
+
 function writer(interval: Interval, scale: Scale, marks: readonly number[]) {
   const factor = scale.kind === "amount" ? 1 : 100;
-  const decimals = places(interval, factor, marks);
+  const decimals = (scale.kind === "amount" ? scale.places : undefined) ?? places(interval, factor, marks);
   const sign = scale.kind === "percent" ? "%" : "";
   const unit =
     scale.kind === "points"

@@ -2,6 +2,7 @@ import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import {
   endInWords,
+  endSize,
   estimateInWords,
   estimateSize,
   HIGHER,
@@ -64,6 +65,11 @@ describe("an interval in words", () => {
     expect(intervalInWords(fares, KRONER, HIGHER)).toBe("4.2 kr lower to 0.3 kr higher");
     expect(estimateSize(fares, KRONER)).toBe("2.0 kr");
     expect(endInWords(fares, "high", KRONER, HIGHER)).toBe("0.3 kr higher");
+    expect(endSize(fares, "low", KRONER)).toBe("4.2 kr");
+    expect(endSize({ ...fares, high: null }, "high", KRONER)).toBeNull();
+    expect(signedInterval({ estimate: 12, low: 8, high: 16 }, { kind: "amount", unit: null, places: 0 })).toBe(
+      "+8 to +16",
+    );
     expect(endInWords({ ...fares, low: null }, "low", KRONER, HIGHER)).toBeNull();
   });
 });

@@ -1,0 +1,32 @@
+import type { Reduction } from "../engine/types.ts";
+import type { Plan } from "../plan/types.ts";
+import { allocation } from "./allocation.ts";
+import { duplicates } from "./duplicates.ts";
+import { filters } from "./filters.ts";
+import { followUp } from "./follow-up.ts";
+import { neverOccurs } from "./never-occurs.ts";
+import { rejected } from "./rejected.ts";
+import { switched } from "./switched.ts";
+import type { Check } from "./types.ts";
+import { unknownVariants } from "./unknown-variants.ts";
+import { withoutRows } from "./without-rows.ts";
+
+export type { Check, CheckOutcome, CheckPart, Figure } from "./types.ts";
+
+/** Every soundness check, in the order of METHODS 7. A check that does not apply gives null. */
+const CHECKS: readonly ((plan: Plan, reduction: Reduction) => Check | null)[] = [
+  allocation,
+  rejected,
+  duplicates,
+  switched,
+  unknownVariants,
+  followUp,
+  filters,
+  neverOccurs,
+  withoutRows,
+];
+
+/** Tests of the data, not of the effect. Those that do not apply, or cannot be computed, are not in the list. */
+export function checks(plan: Plan, reduction: Reduction): Check[] {
+  return CHECKS.map((check) => check(plan, reduction)).filter((check) => check !== null);
+}

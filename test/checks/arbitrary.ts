@@ -1,0 +1,65 @@
+import fc from "fast-check";
+import type { Reduction } from "../../src/engine/types.ts";
+import type { Plan } from "../../src/plan/types.ts";
+import { metricOf, planOf, reductionOf, rowFilter, unitFilter, variantsOf } from "./make.ts";
+
+/** A plan with two or three variants and some of what draws checks, and a log under it that adds up. */
+export const arbitraryLog: fc.Arbitrary<{ plan: Plan; reduction: Reduction }> = fc
+  .record({
+    third: fc.boolean(),
+    equal: fc.boolean(),
+    exclude: fc.boolean(),
+    followUp: fc.boolean(),
+    ever: fc.boolean(),
+    one: fc.boolean(),
+    enrolled: fc.array(fc.oneof(fc.constant(0), fc.nat(20), fc.nat(20_000)), { minLength: 3, maxLength: 3 }),
+    parts: fc.array(fc.array(fc.integer({ min: 0, max: 24 }), { minLength: 3, maxLength: 3 }), {
+      minLength: 7,
+      maxLength: 7,
+    }),
+    rows: fc.array(fc.nat(300), { minLength: 4, maxLength: 4 }),
+    unknownVariant: fc.oneof(fc.constant(0), fc.nat(300)),
+    missing: fc.boolean(),
+  })
+  .map((made) => {
+    const variants = variantsOf(made.equal ? { list: 1, calendar: 1, map: 1 } : { list: 2, calendar: 1, map: 1 });
+    const inTwoVariants = made.exclude ? "exclude" : "first";
+    const plan = planOf({
+      unitCalled: made.one ? { one: "account", many: "accounts" } : { one: "visitor", many: "visitors" },
+      variants: made.third ? variants : variants.slice(0, 2),
+      enrolment: { ...planOf().enrolment, inTwoVariants },
+      followUp: made.followUp ? { days: 1, incomplete: "exclude" } : null,
+      filters: [rowFilter("old site"), unitFilter("robots", made.ever ? "ever" : "at-enrolment")],
+      metrics: [
+        metricOf({ name: "Booked", role: "primary" }),
+        metricOf({ name: "Page time", summary: "mean", withoutRows: "leave-out" }),
+      ],
+    });
+    const enrolled = plan.variants.map((_, i) => made.enrolled[i] ?? 0);
+    // up to a fifth of each arm on each line, so that the analysed are never fewer than none
+    const share = (k: number) => enrolled.map((n, i) => Math.floor((n * (made.parts[k]?.[i] ?? 0)) / 120));
+    const ended = {
+      ...(made.exclude ? { switched: share(0) } : {}),
+      "filter:robots": share(1),
+      ...(made.followUp ? { "follow-up": share(2) } : {}),
+    };
+    const [rejected = 0, duplicate = 0, filtered = 0, differ = 0] = made.rows;
+    const reduction = reductionOf(plan, {
+      enrolled,
+      ended,
+      unknownVariant: made.unknownVariant,
+      rows: { rejected, duplicate, "filter:old site": filtered },
+      leftOut: { "Page time": share(3) },
+      facts: {
+        switched: share(0),
+        withRejected: share(4),
+        withDuplicate: share(5),
+        duplicateIds: duplicate,
+        copiesThatDiffer: Math.min(differ, duplicate),
+        copiesOfOtherUnits: made.one ? Math.min(1, duplicate) : 0,
+        missingEvents: made.missing ? ["booking"] : [],
+        variants: [...variants.map(({ name }) => ({ value: name, rows: 10 })), { value: "calender", rows: 1 }],
+      },
+    });
+    return { plan, reduction };
+  });
