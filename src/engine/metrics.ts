@@ -33,13 +33,12 @@ export async function metricCells(plan: Plan, layout: Layout, engine: Engine, di
   const measures = await decimalMeasures(values, engine, dialect);
   const parts = await tables(measures.map((measure) => measure.value), engine);
   const out = await engine.query(leftOut(raw, caps, dialect));
-  const [rows = {}] = await engine.query(countedRows(layout));
+  const [rows = {}] = await engine.query(countedRows(plan.metrics.length));
   const scores = await scoreTables(plan, layout, values, engine, dialect);
 
   return plan.metrics.map((metric, m) => {
     const of = layout.parts.findIndex((part) => part.metric === m && part.side === "of");
     const per = layout.parts.findIndex((part) => part.metric === m && part.side === "per");
-    const own = [of, per].filter((p) => p >= 0);
     const byVariant = (column: string) =>
       plan.variants.map((_, v) => {
         const row = out.find((found) => Number(found["variant"]) === v);
@@ -49,8 +48,8 @@ export async function metricCells(plan: Plan, layout: Layout, engine: Engine, di
     return {
       metric: metric.name,
       leftOut: byVariant(`none${of}`),
-      countedRows: own.reduce((sum, p) => sum + count(rows, `r${p}`), 0),
-      countedWithoutNumber: own.reduce((sum, p) => sum + count(rows, `q${p}`), 0),
+      countedRows: count(rows, `counted${m}`),
+      countedWithoutNumber: count(rows, `numberless${m}`),
       cap: cap === null ? null : { value: cap, units: byVariant(`over${of}`) },
       of: decimalTable(parts, of, measures[of]),
       ratio: per < 0 ? null : { per: decimalTable(parts, per, measures[per]), score: scores[m] ?? emptyScore },

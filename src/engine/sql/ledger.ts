@@ -1,4 +1,4 @@
-import { FATE, type Layout } from "../layout.ts";
+import { FATE } from "../layout.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /** Counts for the ledger and the soundness checks. All read tables of a few stages; none writes. */
@@ -57,14 +57,8 @@ export const otherVariantCounts = (limit: number): Statement => sql`
 export const eventsThatOccur = (events: Statement): Statement => sql`
   SELECT DISTINCT event AS value FROM rows WHERE fate <> ${FATE.rejected} AND event IN (${events})`;
 
-/** Counted rows of a metric part, and those without a number. */
-export function countedRows(layout: Layout): Statement {
-  const parts = layout.parts.map(
-    (_, p) => sql`coalesce(sum(${name(`r${p}`)}), 0) AS ${name(`r${p}`)}, coalesce(sum(${name(`q${p}`)}), 0) AS ${name(`q${p}`)}`,
-  );
-  return sql`SELECT ${join(parts, ", ")} FROM units`;
+/** Counted rows of each metric, and those of them without a number. */
+export function countedRows(metrics: number): Statement {
+  const sums = Array.from({ length: metrics }, (_, m) => [`counted${m}`, `numberless${m}`]).flat();
+  return sql`SELECT ${join(sums.map((column) => sql`coalesce(sum(${name(column)}), 0) AS ${name(column)}`), ", ")} FROM units`;
 }
-
-/** Rejected rows for rejects.csv, in an order that no thread changes. */
-export const rejectedRows = (): Statement => sql`
-  SELECT file, reason, text FROM rows WHERE fate = ${FATE.rejected} ORDER BY file, reason, text`;

@@ -116,7 +116,7 @@ function fileIndex(group: FileGroup): Statement {
   const indexes = group.files.map((file) => sql`${file.index}`);
   const [only] = indexes;
   if (indexes.length === 1 && only !== undefined) return sql`CAST(${only} AS INTEGER) AS file`;
-  return sql`CAST([${join(indexes, ", ")}][r.file_index + 1] AS INTEGER) AS file`;
+  return sql`CAST([${join(indexes, ", ")}][CAST(r.file_index AS BIGINT) + 1] AS INTEGER) AS file`;
 }
 
 const paths = (group: FileGroup) => sql`[${join(group.files.map((file) => sql`${file.path}`), ", ")}]`;

@@ -8,8 +8,8 @@ import { join, name, type Statement, sql } from "./sql.ts";
 /**
  * Stage 7: one row per analysed unit.
  * Reads   rows, enrolments
- * Writes  units: variant, bucket, before_rows, after_rows, inside_rows, and per metric part p: x<p> (its value, NULL where
- *         the unit is left out), r<p> (counted rows), q<p> (of these, rows without a number)
+ * Writes  units: variant, bucket, before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where the
+ *         unit is left out; per metric counted<m>, its counted rows, and numberless<m>, those of them without a number
  * Every analysed unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
  * rowid: a number, where the id is text.
  */
@@ -28,15 +28,23 @@ export function units(
   const aggregates = layout.parts.flatMap((part, p) => [
     sql`${aggregate(part, days, dialect)} AS ${name(`s${p}`)}`,
     sql`count(*) FILTER (WHERE ${counted(part)}) AS ${name(`r${p}`)}`,
-    ...(part.value === null
-      ? []
-      : [sql`count(*) FILTER (WHERE ${counted(part)} AND ${name(`v${part.value}`)} IS NULL) AS ${name(`q${p}`)}`]),
   ]);
-  const values = layout.parts.flatMap((part, p) => [
-    sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`,
-    name(`r${p}`),
-    part.value === null ? sql`0 AS ${name(`q${p}`)}` : name(`q${p}`),
-  ]);
+  const metricRows = plan.metrics.flatMap((_, m) => {
+    const parts = layout.parts.filter((part) => part.metric === m);
+    const numberless = parts.flatMap((part) =>
+      part.value === null ? [] : [sql`(${counted(part)} AND ${name(`v${part.value}`)} IS NULL)`],
+    );
+    return [
+      sql`count(*) FILTER (WHERE ${join(parts.map((part) => sql`(${counted(part)})`), " OR ")}) AS ${name(`counted${m}`)}`,
+      numberless.length === 0
+        ? sql`0 AS ${name(`numberless${m}`)}`
+        : sql`count(*) FILTER (WHERE ${join(numberless, " OR ")}) AS ${name(`numberless${m}`)}`,
+    ];
+  });
+  const values = [
+    ...layout.parts.map((part, p) => sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`),
+    ...plan.metrics.flatMap((_, m) => [name(`counted${m}`), name(`numberless${m}`)]),
+  ];
   return sql`
     CREATE TEMP TABLE units AS
     SELECT ${list([sql`e.variant`, sql`${dialect.bucket(sql`e.unit`)} AS bucket`, sql`before_rows`, sql`after_rows`, sql`inside_rows`, ...values])}
@@ -47,6 +55,7 @@ export function units(
         sql`count(*) FILTER (WHERE place > 0) AS after_rows`,
         sql`count(*) FILTER (WHERE place = 0) AS inside_rows`,
         ...aggregates,
+        ...metricRows,
       ])}
       FROM (
         SELECT e.rowid AS id, ${place} AS place, r.*
