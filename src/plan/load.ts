@@ -27,7 +27,7 @@ export function loadPlan(text: string): LoadedPlan {
   if (plan === null) return { problems: [...problems, notAPlan(value)], source };
 
   const read = [...problems, ...misspelt, ...faults];
-  const told = new Set(faults.map(({ path }) => JSON.stringify(path)));
+  const told = new Set(faults.filter(({ at }) => at === "value").map(({ path }) => JSON.stringify(path)));
   const checked = [...shapeProblems(plan, yaml), ...ruleProblems(plan, yaml)];
   const all = [...read, ...checked.filter(({ path }) => !told.has(JSON.stringify(path)))];
   if (all.length > 0) return { problems: all, source };

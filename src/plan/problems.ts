@@ -12,13 +12,16 @@ const NOTHING_DONE = "Nothing was computed and no file was written.";
 export function placeProblems(source: PlanSource, fileName: string, problems: readonly Problem[]): string {
   const placed = problems.map((problem) => place(source.yaml, problem)).sort((a, b) => a.span[0] - b.span[0]);
   const width = Math.max(0, ...placed.map(({ line, column }) => `${line}:${column}`.length));
-  const blocks = placed.map((one) => {
+  const blocks = new Map<string, readonly string[]>();
+  for (const one of placed) {
     const where = `${fileName}:${`${one.line}:${one.column}`.padEnd(width)}  ${one.trail}`.trimEnd();
-    return [where, ...excerpt(one), ...sentences(one.problem)].map(printable).join("\n    ");
-  });
+    const head = [where, ...excerpt(one)].map(printable).join(INDENT);
+    blocks.set(head, [...(blocks.get(head) ?? []), ...sentences(one.problem).map(printable)]);
+  }
   const heading = `${printable(fileName)} has ${plural(problems.length, "mistake", "mistakes")}. ${NOTHING_DONE}`;
-  return [heading, ...new Set(blocks)].join("\n\n");
+  return [heading, ...[...blocks].map(([head, lines]) => [head, ...lines].join(INDENT))].join("\n\n");
 }
+const INDENT = "\n    ";
 
 /** A plan that could not be read at all. @param code the error's code as the operating system gives it */
 export function unreadablePlan(fileName: string, code: string): string {

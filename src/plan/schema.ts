@@ -19,7 +19,7 @@ const part = (description: string) =>
       first: column("The earliest value of this column.").optional(),
       last: column("The latest value of this column.").optional(),
     })
-    .meta({ description });
+    .meta({ description, expected: "a mapping such as {event: booking} or {event: booking, sum: fare}" });
 
 const source = z.strictObject({
   files: z.union([text("A path or a glob, relative to the plan."), z.array(text("A path or a glob.")).min(1)]).meta({
@@ -51,7 +51,7 @@ const metric = z.strictObject({
   per: part("The denominator of a ratio of totals.").optional(),
   quantile: shareBetween0And1("Which quantile.").optional(),
   in: text("The unit of measurement, for the reader.").optional(),
-  "good-is": z.enum(["higher", "lower"]).default("higher"),
+  "good-is": z.enum(["higher", "lower"]).meta({ description: "Which way is good." }).default("higher"),
   worthwhile: amount("The smallest effect worth adopting; primary metrics only.").optional(),
   expected: amount("The effect hoped for; used for sizing only.").optional(),
   margin: amount("The largest harm tolerated; guardrails only, and there required.").optional(),
@@ -102,7 +102,7 @@ const filter = z.strictObject({
 const variant = z.strictObject({
   name: text("The variant's name, as the log has it."),
   what: text("What it is, in one sentence for the reader.").optional(),
-  control: z.boolean().default(false),
+  control: z.boolean().meta({ description: "The one that the others are compared with." }).default(false),
   allocation: z
     .union([z.number().gt(0), percentage((share) => share > 0)])
     .meta({
@@ -127,7 +127,10 @@ export const planSchema = z
         event: text("Only rows of this event enrol.").optional(),
         from: moment("Enrolment counts from here on.").optional(),
         before: moment("Enrolment counts up to here, this moment not included.").optional(),
-        "in-two-variants": z.enum(["first", "exclude"]).default("first"),
+        "in-two-variants": z
+          .enum(["first", "exclude"])
+          .meta({ description: "A unit seen in two variants counts where it was first enrolled, or not at all." })
+          .default("first"),
       })
       .prefault({}),
     variants: z.array(variant).min(2).meta({ description: "Two or more, exactly one the control." }),
@@ -135,19 +138,28 @@ export const planSchema = z
     "follow-up": z
       .strictObject({
         days: days("Days of 24 hours after enrolment."),
-        incomplete: z.enum(["exclude", "keep"]).default("exclude"),
+        incomplete: z
+          .enum(["exclude", "keep"])
+          .meta({ description: "Units not followed to the end are left out, or kept." })
+          .default("exclude"),
       })
       .optional(),
     metrics: z.array(metric).min(1).meta({ description: "At least one primary." }),
-    filters: z.array(filter).default([]),
+    filters: z.array(filter).meta({ description: "Units or rows that do not count, in this order." }).default([]),
     subgroups: z.array(text("A column of the log.")).optional(),
     decision: z
       .strictObject({
         confidence: shareBetween0And1("The confidence of the intervals.").default(0.95),
         power: shareBetween0And1("The power used for sizing.").default(0.8),
-        "adopt-when": z.enum(["shown-better", "shown-worthwhile"]).default("shown-better"),
-        primaries: z.enum(["all", "any"]).default("all"),
-        interval: z.enum(["normal", "skew-corrected"]).default("normal"),
+        "adopt-when": z
+          .enum(["shown-better", "shown-worthwhile"])
+          .meta({ description: "The interval lies above 0, or above the worthwhile effect." })
+          .default("shown-better"),
+        primaries: z.enum(["all", "any"]).meta({ description: "How many primary metrics must pass." }).default("all"),
+        interval: z
+          .enum(["normal", "skew-corrected"])
+          .meta({ description: "Which interval decides." })
+          .default("normal"),
       })
       .prefault({}),
     planned: z

@@ -114,19 +114,27 @@ const NO_MESSAGE = "Invalid input"; // zod's own, of a refinement that states no
 /** What to write instead, where the value shows what was meant. */
 function remedyFor(issue: Issue, schema: Schema | null, found: unknown, source: string): string {
   if (found === null) return " Nothing is written here: fill it in, or remove the key.";
-  if (Array.isArray(found) && found.length === 0) return " This list is empty: fill it, or remove the key.";
+  if (Array.isArray(found) && found.length === 0 && expectsList(schema))
+    return " This list is empty: fill it, or remove the key.";
   if (issue.code === "too_small" && Array.isArray(found)) return ` There must be at least ${issue.minimum} of them.`;
   if (schema instanceof z.ZodArray && typeof found === "object") return " Put a dash before its first key.";
   if (typeof found === "number") return remedyForNumber(issue, schema, found, source);
   if (typeof found === "boolean" && isText(schema)) return ` Put it in quotes: "${source}".`;
-  if (typeof found !== "string") return "";
+  return typeof found === "string" ? remedyForText(schema, found) : "";
+}
 
-  if (schema instanceof z.ZodBoolean && /^(yes|on)$/i.test(found)) return ` For ${found} write true.`;
-  if (schema instanceof z.ZodBoolean && /^(no|off)$/i.test(found)) return ` For ${found} write false.`;
+function remedyForText(schema: Schema | null, found: string): string {
   if (isText(schema)) return " This is empty.";
-  const bare = found.replaceAll(/[ _,](?=\d)/g, "");
-  if (expectsNumber(schema) && parseYamlNumber(bare) !== null) return ` Write ${bare}, without quotes or separators.`;
-  return "";
+  if (schema instanceof z.ZodBoolean) {
+    if (/^(true|false)$/.test(found)) return " Write it without quotes.";
+    if (/^(yes|on)$/i.test(found)) return ` For ${found} write true.`;
+    return /^(no|off)$/i.test(found) ? ` For ${found} write false.` : "";
+  }
+  if (!expectsNumber(schema)) return "";
+  if (/^[+-]?\d{1,3}([ _,]\d{3})+(\.\d+)?$/.test(found))
+    return ` Write ${found.replaceAll(/[ _,]/g, "")}, without separators.`;
+  if (/^[+-]?\d+,\d+ ?%?$/.test(found)) return ` Write ${found.replace(",", ".")}, with a point.`;
+  return parseYamlNumber(found) === null ? "" : " Write it without quotes.";
 }
 
 function remedyForNumber(issue: Issue, schema: Schema | null, found: number, source: string): string {
@@ -141,6 +149,10 @@ function remedyForNumber(issue: Issue, schema: Schema | null, found: number, sou
 /** Text without a form of its own. */
 function isText(schema: Schema | null): boolean {
   return schema instanceof z.ZodString && expectedText(schema) === "text";
+}
+
+function expectsList(schema: Schema | null): boolean {
+  return schema instanceof z.ZodArray || (schema instanceof z.ZodUnion && schema.options.some(expectsList));
 }
 
 function expectsNumber(schema: Schema | null): boolean {

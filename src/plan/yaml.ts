@@ -9,10 +9,10 @@ import {
   type Pair,
   parseDocument,
   type Scalar,
-  type YAMLError,
 } from "yaml";
 import { parseYamlNumber } from "./number.ts";
 import type { DecimalText, Problem } from "./types.ts";
+import { nestedTooDeep, yamlProblems } from "./yaml-faults.ts";
 
 /** The plan's text, its YAML tree and its lines: what is needed to say where something stands. */
 export interface YamlText {
@@ -28,12 +28,16 @@ export type Span = readonly [number, number];
 export function readYaml(fileText: string): { yaml: YamlText; problems: readonly Problem[]; isBroken: boolean } {
   const text = fileText.replace(/^\uFEFF/, ""); // a byte order mark is no column of the first line
   const lines = new LineCounter();
-  const document = parseDocument(text, { schema: "core", lineCounter: lines, prettyErrors: false });
-  const faults = [...document.errors, ...document.warnings];
+  const tooDeep = nestedTooDeep(text);
+  const document = parseDocument(tooDeep === null ? text : "", {
+    schema: "core",
+    lineCounter: lines,
+    prettyErrors: false,
+  });
   return {
     yaml: { text, document, lines },
-    problems: faults.map(yamlProblem),
-    isBroken: document.errors.some((fault) => fault.code !== "DUPLICATE_KEY"),
+    problems: tooDeep === null ? yamlProblems([...document.errors, ...document.warnings], text) : [tooDeep],
+    isBroken: tooDeep !== null || document.errors.some((fault) => fault.code !== "DUPLICATE_KEY"),
   };
 }
 
@@ -44,6 +48,13 @@ export function plainData(yaml: YamlText): { value: unknown; problems: readonly 
   const plain = (node: unknown, path: Path, above: readonly unknown[]): unknown => {
     nodes += 1;
     const target = isAlias(node) ? node.resolve(yaml.document) : node;
+    if (isAlias(node) && target === undefined) {
+      problems.push({
+        path,
+        at: "value",
+        message: "This alias names no anchor. Put text that begins with * in quotes.",
+      });
+    }
     if (above.includes(target) || nodes > MOST_NODES) {
       problems.push({
         path,
@@ -58,7 +69,8 @@ export function plainData(yaml: YamlText): { value: unknown; problems: readonly 
       for (const pair of target.items) {
         const key = keyText(pair);
         if (key === null || key === "__proto__") {
-          problems.push({ path, at: "key", message: "A key must be a text.", ...spanOfKey(pair) });
+          const message = key === null ? "A key must be a text." : "No column or key can have this name.";
+          problems.push({ path, at: "key", message, ...spanOfKey(pair) });
         } else if (!(key in mapping)) {
           mapping[key] = plain(pair.value, [...path, key], [...above, target]);
         }
@@ -155,20 +167,3 @@ function spanOfKey(pair: Pair): { span?: Span } {
   const range = (pair.key as Scalar | null)?.range;
   return range ? { span: [range[0], Math.max(range[1], range[0] + 1)] } : {};
 }
-
-function yamlProblem(fault: YAMLError): Problem {
-  return {
-    path: [],
-    at: "key",
-    message: YAML_WORDS[fault.code] ?? `This is not YAML: ${fault.message}.`,
-    span: fault.pos,
-  };
-}
-const YAML_WORDS: Partial<Record<YAMLError["code"], string>> = {
-  DUPLICATE_KEY: "This key stands here a second time. Keep one of the two.",
-  MULTIPLE_DOCS: "A plan is one YAML document. Remove this line and what follows it, or make it a file of its own.",
-  TAB_AS_INDENT: "A tab indents this line. YAML allows spaces only.",
-  BLOCK_AS_IMPLICIT_KEY: 'This line holds two keys. If it is text with a colon in it, put the text in quotes: "…: …".',
-  BAD_ALIAS: "This alias names no anchor of the plan.",
-  TAG_RESOLVE_FAILED: "A plan knows no YAML tags. Remove the word that begins with an exclamation mark.",
-};

@@ -1,0 +1,77 @@
+import type { YAMLError } from "yaml";
+import type { Problem } from "./types.ts";
+
+/** What keeps a text from being YAML, in our words: the parser's own speak of indicators and implicit keys. */
+
+/** One problem a line: what follows a first fault is mostly its consequence. */
+export function yamlProblems(faults: readonly YAMLError[], text: string): readonly Problem[] {
+  const lineOf = (offset: number) => text.slice(0, offset).split("\n").length;
+  const lines = faults.map((fault) => lineOf(fault.pos[0]));
+  return faults.filter((_, i) => lines.indexOf(lines[i] ?? 0) === i).map((fault) => yamlProblem(fault, text));
+}
+
+/** Lists inside lists beyond this would exhaust the parser before it could tell. A plan is about six deep. */
+export function nestedTooDeep(text: string): Problem | null {
+  let depth = 0;
+  for (const { 0: mark, index } of text.matchAll(/[[\]{}]|^ *(?:[-?] ){50}/gm)) {
+    depth += mark === "]" || mark === "}" ? -1 : mark.length > 1 ? DEEPEST : 1;
+    if (depth >= DEEPEST) {
+      const message = "Lists stand inside lists here, deeper than any plan is. Close a bracket that was left open.";
+      return { path: [], at: "key", message, span: [index, index + 1] };
+    }
+  }
+  return null;
+}
+const DEEPEST = 50;
+
+function yamlProblem(fault: YAMLError, text: string): Problem {
+  const words = WORDS.find(([code, pattern]) => code === fault.code && pattern.test(fault.message));
+  const message = words?.[2] ?? `This is not YAML: ${fault.message}.`;
+  return { path: [], at: "key", message, span: spanOf(fault, text) };
+}
+
+function spanOf({ code, message, pos }: YAMLError, text: string): readonly [number, number] {
+  const [start, end] = pos;
+  if (code === "DUPLICATE_KEY")
+    return [start, start + (/^(?:"[^"]*"|'[^']*'|[^:,}\s]*)/.exec(text.slice(start))?.[0].length ?? 1)];
+  // an open quotation mark is noticed at the end of the text only
+  const written = text.slice(0, start).trimEnd().length;
+  return message.startsWith("Missing closing") && start > written ? [Math.max(0, written - 1), written] : [start, end];
+}
+
+const WORDS: readonly (readonly [YAMLError["code"], RegExp, string])[] = [
+  ["DUPLICATE_KEY", /./, "This key stands here a second time. Keep one of the two."],
+  [
+    "MULTIPLE_DOCS",
+    /./,
+    "A plan is one YAML document. Remove this line and what follows, or make that a file of its own.",
+  ],
+  ["TAB_AS_INDENT", /./, "A tab indents this line. YAML takes spaces only."],
+  ["BLOCK_AS_IMPLICIT_KEY", /./, 'A second key stands on this line. Put text with a colon in it in quotes: "…: …".'],
+  [
+    "MULTILINE_IMPLICIT_KEY",
+    /./,
+    "A key and its colon belong on one line. Look for a missing colon, or for a wrong indent.",
+  ],
+  ["BAD_INDENT", /^Flow/, "A bracket that opened above is not closed before this line. Close it with ] or }."],
+  [
+    "BAD_INDENT",
+    /./,
+    "This line is indented unlike the ones that it belongs to. Let keys of one mapping begin in one column.",
+  ],
+  ["BLOCK_IN_FLOW", /./, "Inside braces keys are set apart by commas. Look for a missing comma."],
+  ["MISSING_CHAR", /quote$/, "A quotation mark that opened above is never closed. Close it."],
+  [
+    "MISSING_CHAR",
+    /^Sequence item/,
+    "This line is indented unlike the ones of its list. Begin each item with a dash, its keys in one column.",
+  ],
+  [
+    "UNEXPECTED_TOKEN",
+    /scalar at node end/,
+    "Text follows a closing quotation mark. Put all of the text in one pair of quotes.",
+  ],
+  ["UNEXPECTED_TOKEN", /same line with key/, "A list begins on a line of its own, below its key."],
+  ["BAD_SCALAR_START", /./, "A text cannot begin with this character. Put the text in quotes."],
+  ["TAG_RESOLVE_FAILED", /./, "A plan knows no YAML tags. Remove the word that begins with an exclamation mark."],
+];
