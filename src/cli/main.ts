@@ -1,5 +1,5 @@
 #!/usr/bin/env node
-import { readFileSync } from "node:fs";
+import { version } from "../version.ts";
 import { loadLibrary } from "./library.ts";
 import { run } from "./program.ts";
 import { type ExitStatus, terminalOf } from "./terminal.ts";
@@ -11,7 +11,7 @@ async function main(argv: readonly string[]): Promise<void> {
   leaveQuietlyWhenThePipeCloses();
   const stop = stopOnSignal();
   try {
-    const status = await run(argv, { terminal, load: loadLibrary, signal: stop.signal, version: version() });
+    const status = await run(argv, { terminal, load: loadLibrary, signal: stop.signal, version });
     process.exitCode = status;
   } catch (error) {
     terminal.settle();
@@ -24,11 +24,6 @@ async function main(argv: readonly string[]): Promise<void> {
     terminal.complain(faultText(error, argv.includes("--debug")));
     process.exitCode = 1;
   }
-}
-
-function version(): string {
-  const text = readFileSync(new URL("../../package.json", import.meta.url), "utf8");
-  return (JSON.parse(text) as { version: string }).version;
 }
 
 /** The reader of a pipe may leave early (head): that is no fault. */

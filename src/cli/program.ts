@@ -1,6 +1,7 @@
 import { Command, CommanderError } from "commander";
+import type { CloseoutOptions } from "../index.ts";
 import { demo } from "./demo.ts";
-import type { CloseoutOptions, Library } from "./library.ts";
+import type { Library } from "./library.ts";
 import { report } from "./report.ts";
 import { schema } from "./schema.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";

@@ -1,5 +1,5 @@
+import type { Progress } from "../index.ts";
 import { count } from "../words/index.ts";
-import type { Progress } from "./library.ts";
 
 /** "reading rows  1,204,000 rows  34%": what is known, nothing else. */
 export function progressText({ stage, rows, share }: Progress): string {

@@ -1,5 +1,6 @@
+import type { CloseoutOptions } from "../index.ts";
 import { withAccents } from "./accents.ts";
-import type { CloseoutOptions, Library } from "./library.ts";
+import type { Library } from "./library.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 
 export interface ReportArguments {

@@ -1,6 +1,6 @@
 import { createLogUpdate } from "log-update";
 import pc from "picocolors";
-import type { Progress } from "./library.ts";
+import type { Progress } from "../index.ts";
 import { progressText } from "./progress.ts";
 
 /** Done; a bug of ours; plan or arguments wrong; the log cannot be used. After a stop by signal: 128 + its number. */

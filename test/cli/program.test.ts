@@ -4,12 +4,19 @@ import { join } from "node:path";
 import { stripVTControlCharacters } from "node:util";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
 import { withAccents } from "../../src/cli/accents.ts";
-import type { CloseoutOptions, Library, Outcome } from "../../src/cli/library.ts";
+import type { Library } from "../../src/cli/library.ts";
 import { run } from "../../src/cli/program.ts";
 import { progressText } from "../../src/cli/progress.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
+import type { CloseoutOptions, Outcome, ReportJson } from "../../src/index.ts";
 
-const DONE: Outcome = { status: 0, terminal: "A test\n\nAdopt it.", folder: "out/a-test" };
+const DONE: Outcome = {
+  status: 0,
+  terminal: "A test\n\nAdopt it.",
+  folder: "out/a-test",
+  files: [],
+  report: {} as ReportJson, // the command line does not look inside
+};
 
 /** Runs the command line against a library that only remembers what it was asked. */
 async function command(argv: string[], outcome: Outcome | Error = DONE) {
@@ -24,7 +31,7 @@ async function command(argv: string[], outcome: Outcome | Error = DONE) {
     dim: (text) => text,
   };
   const library: Library = {
-    closeout: async (plan, options) => {
+    closeout: async (plan, options = {}) => {
       asked.push({ plan, options });
       if (outcome instanceof Error) throw outcome;
       return outcome;
@@ -108,7 +115,7 @@ describe("what is asked for", () => {
   it("prints help to stdout with status 0, and only the commands that are there", async () => {
     const { status, stdout, stderr } = await command(["--help"]);
     expect([status, stderr]).toEqual([0, ""]);
-    const [, commands = ""] = /Commands:\n([^]*?)\n\n/.exec(stdout) ?? [];
+    const [, commands = ""] = /Commands:\n([\s\S]*?)\n\n/.exec(stdout) ?? [];
     expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
   });
 
