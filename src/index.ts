@@ -86,7 +86,7 @@ function decisionReport(plan: Plan, planText: string, reduction: Reduction): Pro
   });
   const checks = soundnessChecks(plan, reduction);
   const effects = allEffects(plan, armsByMetric);
-  const conclusion = concluded(plan, effects, checks, reduction);
+  const conclusion = concluded(plan, effects, checks, reduction, armsByMetric);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
   return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, conclusion });
 }

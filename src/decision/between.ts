@@ -1,0 +1,39 @@
+import type { Arm } from "../cells/types.ts";
+import type { Metric, Plan } from "../plan/types.ts";
+import { contrast } from "../stats/index.ts";
+import { arm } from "./effects.ts";
+import { levelsInWords } from "./levels.ts";
+import { told } from "./told.ts";
+import type { Effect } from "./types.ts";
+
+/**
+ * The contrast between the best two of several variants that passed, on one metric, pointwise: the rule took the larger
+ * estimate, and this tells how sure the order of the two is.
+ */
+export function betweenSentence(
+  plan: Plan,
+  metric: Metric,
+  arms: readonly (readonly Arm[])[],
+  best: string,
+  other: string,
+): string {
+  const m = plan.metrics.indexOf(metric);
+  const index = (name: string) => plan.variants.findIndex((variant) => variant.name === name);
+  const found = contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), 1 - plan.decision.confidence);
+  const effect: Effect = {
+    metric: metric.name,
+    role: "secondary",
+    summary: metric.summary,
+    variant: best,
+    control: other,
+    contrast: found,
+    pAdjusted: null,
+    zone: "not-settled",
+    eitherWay: false,
+  };
+  const texts = told(effect, plan);
+  const levels = levelsInWords(effect, plan);
+  const start = `Between the two, ${metric.name}`;
+  if (texts === null || levels === null) return `${start} cannot be compared.`;
+  return `${start}: ${levels}, ${texts.found}. This comparison does not decide.`;
+}

@@ -1,0 +1,99 @@
+import type { Arm } from "../cells/types.ts";
+import type { Check } from "../checks/types.ts";
+import type { Reduction } from "../engine/types.ts";
+import type { Plan } from "../plan/types.ts";
+import { askedSentence } from "./asked.ts";
+import { betweenSentence } from "./between.ts";
+import { metricOf } from "./measure.ts";
+import { type Verdict, verdictOn } from "./rule.ts";
+import { adoptSentence, alsoPassed, keepSentence, notSettledSentence, undecidableSentence } from "./sentences.ts";
+import type { Conclusion, Effect } from "./types.ts";
+import { obstacles } from "./undecidable.ts";
+import { effectSentence, guardrailSentence } from "./words.ts";
+import { turned } from "./zones.ts";
+
+/**
+ * The plan's rule applied (METHODS 2 and 7), in the order of METHODS: undecidable, adopt, keep the control, not settled.
+ * @param arms as for `effects`; only where several variants pass, for the contrast between the best two
+ */
+export function conclusion(
+  plan: Plan,
+  effects: readonly Effect[],
+  checks: readonly Check[],
+  reduction: Reduction,
+  arms: readonly (readonly Arm[])[],
+): Conclusion {
+  const stopped = obstacles(plan, checks, reduction);
+  if (stopped.length > 0) {
+    return { decision: "undecidable", variant: null, sentence: undecidableSentence(plan), reasons: stopped };
+  }
+  const variants = plan.variants.filter((variant) => !variant.isControl);
+  const verdicts = variants.map(({ name }) => verdictOn(plan, name, effects));
+  const reasons = effects.flatMap((effect) => reason(effect, plan));
+
+  const passing = bestFirst(
+    plan,
+    verdicts.filter(({ verdict }) => verdict === "passes"),
+  );
+  const [best, second] = passing;
+  if (best !== undefined) {
+    const sentence = adoptSentence(best.variant);
+    if (second === undefined) return { decision: "adopt", variant: best.variant, sentence, reasons };
+    return {
+      decision: "adopt",
+      variant: best.variant,
+      sentence: `${sentence} ${passedToo(passing)}`,
+      reasons: [...reasons, between(plan, best, second, arms)],
+    };
+  }
+  if (verdicts.every(({ verdict }) => verdict === "blocked")) {
+    return { decision: "keep-control", variant: null, sentence: keepSentence(plan, verdicts), reasons };
+  }
+  return { decision: "not-settled", variant: null, sentence: notSettledSentence(plan, verdicts), reasons };
+}
+
+/** What decided, with its figures: a primary and what was asked of it, or a guardrail and its limit. */
+function reason(effect: Effect, plan: Plan): string[] {
+  switch (effect.role) {
+    case "primary":
+      return [`${effectSentence(effect, plan)} ${askedSentence(effect, plan)}`];
+    case "guardrail":
+      return [guardrailSentence(effect, plan)];
+    case "secondary":
+      return [];
+  }
+}
+
+/** By the estimate on the first primary, signs turned; the sort is stable, so a tie keeps the plan's order. */
+function bestFirst(plan: Plan, verdicts: readonly Verdict[]): Verdict[] {
+  return [...verdicts].sort((a, b) => gainOn(plan, b) - gainOn(plan, a));
+}
+
+function gainOn(plan: Plan, { primaries: [first] }: Verdict): number {
+  const estimate = first?.contrast.difference.estimate;
+  if (first === undefined || estimate === null || estimate === undefined) {
+    throw new Error("a variant passed without an estimate on the first primary");
+  }
+  return turned(metricOf(first, plan), { low: estimate, high: estimate }).low ?? estimate;
+}
+
+function passedToo([best, ...others]: readonly Verdict[]): string {
+  const [first] = best?.primaries ?? [];
+  const [second] = others;
+  if (best === undefined || first === undefined || second === undefined)
+    throw new Error("nothing passed beside the best");
+  const estimateOf = (verdict: Verdict) => verdict.primaries[0]?.contrast.difference.estimate;
+  const tie = estimateOf(best) === estimateOf(second);
+  return alsoPassed(
+    best.variant,
+    others.map(({ variant }) => variant),
+    first.metric,
+    tie,
+  );
+}
+
+function between(plan: Plan, best: Verdict, second: Verdict, arms: readonly (readonly Arm[])[]): string {
+  const [first] = best.primaries;
+  if (first === undefined) throw new Error("a plan came here without a primary");
+  return betweenSentence(plan, metricOf(first, plan), arms, best.variant, second.variant);
+}

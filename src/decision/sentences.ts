@@ -1,0 +1,109 @@
+import type { Plan } from "../plan/types.ts";
+import { list, quoted } from "../words/index.ts";
+import { controlOf } from "./effects.ts";
+import { isEnough, isRuledOut, type Verdict } from "./rule.ts";
+import { type Told, told } from "./told.ts";
+import type { Effect, Zone } from "./types.ts";
+import { notRuledOut } from "./words.ts";
+
+// Variants are named in quotes and without an article: names are arbitrary text, and "Adopt no banner." or "Adopt the B."
+// would not read; a quoted name always does.
+
+export function adoptSentence(variant: string): string {
+  return `Adopt ${quoted(variant)}.`;
+}
+
+/** Several variants passed: which, and that the one adopted did best on the first primary, or stands first in the plan. */
+export function alsoPassed(best: string, others: readonly string[], metric: string, tie: boolean): string {
+  const passed = `${list(others.map(quoted))} passed too`;
+  return tie
+    ? `${passed}, and no less well on ${metric}; ${quoted(best)} stands first in the plan.`
+    : `${passed}; ${quoted(best)} did best on ${metric}.`;
+}
+
+export function undecidableSentence(plan: Plan): string {
+  const names = plan.variants.filter((variant) => !variant.isControl).map(({ name }) => quoted(name));
+  const have = names.length === 1 ? "has" : "have";
+  return `No decision from this data yet. It must be mended first; ${list(names)} ${have} not been judged.`;
+}
+
+/** "Stay with …", and for each variant what rules it out first. */
+export function keepSentence(plan: Plan, verdicts: readonly Verdict[]): string {
+  return [
+    `Stay with ${quoted(controlOf(plan).name)}.`,
+    ...verdicts.map((verdict) => ruledOutSentence(plan, verdict)),
+  ].join(" ");
+}
+
+/** What is open for the one variant that still is, or that several are; then those that are ruled out. */
+export function notSettledSentence(plan: Plan, verdicts: readonly Verdict[]): string {
+  const open = verdicts.filter(({ verdict }) => verdict === "open");
+  const out = verdicts.filter(({ verdict }) => verdict === "blocked").map(({ variant }) => quoted(variant));
+  const rest = out.length === 0 ? "" : ` ${list(out)} ${out.length === 1 ? "is" : "are"} ruled out.`;
+  const [only] = open;
+  const missing = open.length === 1 && only !== undefined ? stillMissing(plan, only) : null;
+  if (missing !== null) return `Not settled: ${missing}${rest}`;
+  const names = list(
+    open.map(({ variant }) => quoted(variant)),
+    "or",
+  );
+  return `Not settled: this test can neither recommend ${names} nor advise against ${open.length === 1 ? "it" : "them"}.${rest}`;
+}
+
+/** One sentence on what blocks a variant: a primary that is ruled out, else a guardrail beyond its limit. */
+function ruledOutSentence(plan: Plan, { primaries, guardrails }: Verdict): string {
+  const primary = primaries.find(isRuledOut);
+  if (primary !== undefined) return fromTable(RULED_OUT, primary, plan);
+  const guardrail = guardrails.find(({ zone }) => zone === "beyond");
+  if (guardrail === undefined) throw new Error("a variant is blocked, and by nothing");
+  const passed = primaries.every((effect) => isEnough(plan, effect)) ? `${wereBetter(primaries)}, but ` : "";
+  return passed + fromTable(RULED_OUT, guardrail, plan);
+}
+
+/** What keeps a variant from passing when its primaries point to it; null when they do not. */
+function stillMissing(plan: Plan, { variant, primaries, guardrails }: Verdict): string | null {
+  const open = guardrails.filter(({ zone }) => zone === "not-settled");
+  const [guardrail] = open;
+  const better = `${wereBetter(primaries)} with ${quoted(variant)}, but `;
+  if (guardrail !== undefined && primaries.every((effect) => isEnough(plan, effect))) {
+    return `${better}${notRuledOut(guardrail, plan)}${intervalOf(guardrail, plan)}.`;
+  }
+  const unproven = primaries.find((effect) => effect.zone === "better" && !isEnough(plan, effect));
+  const allBetter = primaries.every(({ zone }) => zone === "better" || zone === "worthwhile");
+  if (unproven === undefined || !allBetter || open.length > 0) return null;
+  const amount = told(unproven, plan)?.amount ?? "";
+  return amount === ""
+    ? `${better}the plan adopts only on a gain it calls worthwhile, and states none for ${unproven.metric}.`
+    : `${better}a gain of ${amount} is not proven${intervalOf(unproven, plan)}.`;
+}
+
+type Sentences = { readonly [zone in Zone]?: (texts: Told, effect: Effect) => string };
+
+const RULED_OUT: Sentences = {
+  worse: ({ metric, variant, moved }) => `${metric} ${moved} with ${variant}, which is the wrong way.`,
+  "too-small": ({ metric, variant, amount, interval }) =>
+    `${metric}: ${variant} helps, but by less than the ${amount} asked for (${interval}).`,
+  "no-worthwhile-gain": ({ metric, variant, amount, interval }, { eitherWay }) =>
+    eitherWay
+      ? `${metric}: with ${variant} a gain of ${amount} is ruled out, and so is a loss of ${amount} (${interval}).`
+      : `${metric}: ${variant} may help, but by less than the ${amount} asked for (${interval}).`,
+  beyond: ({ metric, variant, moved, amount }) => `${metric} ${moved} with ${variant}, beyond the limit of ${amount}.`,
+};
+
+function fromTable(table: Sentences, effect: Effect, plan: Plan): string {
+  const texts = told(effect, plan);
+  const sentence = table[effect.zone];
+  if (texts === null || sentence === undefined) {
+    throw new Error(`${effect.metric} is ${effect.zone} without an interval or without words for it`);
+  }
+  return sentence(texts, effect);
+}
+
+function wereBetter(primaries: readonly Effect[]): string {
+  return `${list(primaries.map(({ metric }) => metric))} ${primaries.length === 1 ? "was" : "were"} better`;
+}
+
+function intervalOf(effect: Effect, plan: Plan): string {
+  const texts = told(effect, plan);
+  return texts === null ? "" : ` (${texts.interval})`;
+}
