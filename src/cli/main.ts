@@ -1,5 +1,6 @@
 #!/usr/bin/env node
 import { version } from "../version.ts";
+import { faultText } from "./fault.ts";
 import { loadLibrary } from "./library.ts";
 import { run } from "./program.ts";
 import { type ExitStatus, terminalOf } from "./terminal.ts";
@@ -47,16 +48,4 @@ function stopOnSignal(): { readonly signal: AbortSignal; status(): ExitStatus | 
   process.on("SIGINT", stop(130));
   process.on("SIGTERM", stop(143));
   return { signal: controller.signal, status: () => stopped };
-}
-
-/** A fault of ours: what it says and what caused it, outermost first; the stack only when asked for. */
-function faultText(error: unknown, debug: boolean): string {
-  const causes: Error[] = [];
-  for (let cause = error; cause instanceof Error; cause = cause.cause) causes.push(cause);
-  if (debug) return causes.map((cause) => cause.stack ?? cause.message).join("\ncaused by ");
-  return [
-    "A fault of closeout itself, not of the plan or the log:",
-    causes.map((cause) => cause.message).join("\n  because: ") || String(error),
-    "The same command with --debug says where it happened; please pass that on to the maintainers.",
-  ].join("\n");
 }
