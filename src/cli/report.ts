@@ -17,6 +17,8 @@ export async function report(
   const outcome = await library.closeout(plan, { ...options, progress: terminal.progress, signal });
   terminal.settle();
   if (outcome.status !== 0) {
+    // A reading that was stopped can look like a log that cannot be read.
+    signal.throwIfAborted();
     terminal.complain(outcome.text);
     return outcome.status;
   }
