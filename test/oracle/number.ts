@@ -28,6 +28,14 @@ export function readDecimal(text: string): Decimal | null {
   };
 }
 
+/** In plain digits, the shortest: "0.05", "-1200". */
+export function decimalText({ sign, digits, lead }: Decimal): string {
+  if (sign === 0) return "0";
+  const whole = lead < 0 ? "0" : digits.slice(0, lead + 1).padEnd(lead + 1, "0");
+  const fraction = lead < 0 ? "0".repeat(-lead - 1) + digits : digits.slice(lead + 1);
+  return `${sign < 0 ? "-" : ""}${whole}${fraction === "" ? "" : `.${fraction}`}`;
+}
+
 /** Exact: no digit of either side is rounded. */
 export function compareDecimals(a: Decimal, b: Decimal): number {
   if (a.sign !== b.sign) return a.sign - b.sign;

@@ -11,6 +11,7 @@ import type {
   Scalar,
   Where,
 } from "../../src/plan/types.ts";
+import { decimalText, readDecimal } from "./number.ts";
 import { namedColumns } from "./plan-columns.ts";
 import { clockOf } from "./time.ts";
 
@@ -161,7 +162,7 @@ function scalars(node: Node | null): Scalar[] {
   return (isSeq(node) ? list(node) : [node]).map((item) => {
     const value = isScalar(item) ? item.value : null;
     if (typeof value === "boolean") return { kind: "boolean", value };
-    return typeof value === "number" ? { kind: "number", value: plain(item) } : { kind: "text", text: plain(item) };
+    return typeof value === "number" ? { kind: "number", value: decimal(plain(item)) } : { kind: "text", text: plain(item) };
   });
 }
 
@@ -171,12 +172,12 @@ function amountOf(node: Node | null): Amount | null {
   return { kind: pair[0] === "relative" ? "relative" : "absolute", value: Number(decimal(plain(pair[1]))) };
 }
 
-/** "5%" is "0.05", by moving the point. */
+/** In plain digits; "5%" is "0.05". */
 function decimal(text: string): string {
-  if (!text.endsWith("%")) return text;
-  const [whole = "", fraction = ""] = text.slice(0, -1).split(".");
-  const digits = whole.padStart(3, "0");
-  return `${digits.slice(0, -2)}.${digits.slice(-2)}${fraction}`;
+  const percent = text.endsWith("%");
+  const value = readDecimal(percent ? text.slice(0, -1) : text);
+  if (value === null) throw new Error(`not a number of a plan: ${text}`);
+  return decimalText(percent ? { ...value, lead: value.lead - 2 } : value);
 }
 
 function at(node: Node | null, key: string): Node | null {
