@@ -3,9 +3,11 @@
 // what was found, in sentences that page, terminal and summary share
 export { askedSentence } from "./asked.ts";
 export { conclusion } from "./conclusion.ts";
-export { effects } from "./effects.ts";
+export { controlOf, effects } from "./effects.ts";
+// which interval of an effect a reader sees, and what the plan asks in words
+export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
 export { nextSentences, untilThen, whatWouldSettle, whyNotSettled } from "./next.ts";
 // types
 export type { Conclusion, DecisionWord, Effect, Zone } from "./types.ts";
 export { absoluteSentence, effectSentence, guardrailSentence } from "./words.ts";
-export { placed } from "./zones.ts";
+export { placed, ruleOf } from "./zones.ts";

@@ -80,14 +80,14 @@ function stillMissing(plan: Plan, { variant, primaries, guardrails }: Verdict): 
 type Sentences = { readonly [zone in Zone]?: (texts: Told, effect: Effect) => string };
 
 const RULED_OUT: Sentences = {
-  worse: ({ metric, variant, moved }) => `${metric} ${moved} with ${variant}, which is the wrong way.`,
+  worse: ({ metric, moved }) => `${metric} ${moved}, which is the wrong way.`,
   "too-small": ({ metric, variant, amount, interval }) =>
     `${metric}: ${variant} helps, but by less than the ${amount} asked for (${interval}).`,
   "no-worthwhile-gain": ({ metric, variant, amount, interval }, { eitherWay }) =>
     eitherWay
       ? `${metric}: with ${variant} a gain of ${amount} is ruled out, and so is a loss of ${amount} (${interval}).`
       : `${metric}: ${variant} may help, but by less than the ${amount} asked for (${interval}).`,
-  beyond: ({ metric, variant, moved, amount }) => `${metric} ${moved} with ${variant}, beyond the limit of ${amount}.`,
+  beyond: ({ metric, moved, amount }) => `${metric} ${moved}, beyond the limit of ${amount}.`,
 };
 
 function fromTable(table: Sentences, effect: Effect, plan: Plan): string {

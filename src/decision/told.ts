@@ -19,7 +19,7 @@ export interface Told {
   readonly variant: string;
   /** "10.0% more (95% interval: 6.5% to 13.7% more)". */
   readonly found: string;
-  /** "rose by 10.0% (95% interval: 6.5% to 13.7%)". */
+  /** 'rose by 10.0% with "calendar" (95% interval: 6.5% to 13.7%)'. */
   readonly moved: string;
   /** "95% interval: 6.5% to 13.7% more". */
   readonly interval: string;
@@ -45,7 +45,7 @@ export function told(effect: Effect, plan: Plan): Told | null {
     metric: effect.metric,
     variant: quoted(effect.variant),
     found: `${estimateInWords(interval, scale, words, marks)} (${ends})`,
-    moved: `${movedBy(interval.estimate, estimateSize(interval, scale, marks))} (${sizes === null ? ends : `${label}: ${sizes}`})`,
+    moved: `${movedBy(interval.estimate, estimateSize(interval, scale, marks))} with ${quoted(effect.variant)} (${sizes === null ? ends : `${label}: ${sizes}`})`,
     interval: ends,
     least: endInWords(interval, harmEnd, scale, words, marks) ?? "",
     most: endInWords(interval, gainEnd, scale, words, marks) ?? "",
