@@ -1,4 +1,4 @@
-import { closest, distance } from "fastest-levenshtein";
+import { nearest } from "../plan/nearest.ts";
 import { list } from "../words/index.ts";
 
 /** What a reader of the command line's own complaints needs to know of a command. */
@@ -15,9 +15,9 @@ export class UsageError extends Error {}
 export function unknownCommand(name: string, commands: readonly CommandFacts[]): UsageError {
   const names = commands.map((command) => command.name);
   const near = nearest(name, names);
-  const meant = /\.ya?ml$/i.test(name) ? ` Did you mean closeout report ${name}?` : near && ` Did you mean ${near}?`;
+  const meant = /\.ya?ml$/i.test(name) ? ` Did you mean closeout report ${name}?` : didYouMean(near);
   return new UsageError(
-    `closeout has no command "${name}".${meant || ""}\nThe commands are ${list(names)}; closeout --help describes them.`,
+    `closeout has no command "${name}".${meant}\nThe commands are ${list(names)}; closeout --help describes them.`,
   );
 }
 
@@ -26,17 +26,13 @@ export function unknownOption(option: string, command: CommandFacts | null): Usa
   const name = option.replace(/=.*/s, "");
   const near = nearest(name, options);
   const whose = command === null ? "closeout" : `closeout ${command.name}`;
-  return new UsageError(
-    `${whose} has no option ${name}.${near === null ? "" : ` Did you mean ${near}?`}\nIts options are ${list(options)}.`,
-  );
+  return new UsageError(`${whose} has no option ${name}.${didYouMean(near)}\nIts options are ${list(options)}.`);
 }
 
 export function wrongArguments(problem: string, command: CommandFacts): UsageError {
-  return new UsageError(`${problem}\nUse it so: closeout ${command.usage}`);
+  return new UsageError(`${problem}\nUsage: closeout ${command.usage}`);
 }
 
-/** A third of the letters may be wrong, and two in short words. */
-function nearest(wanted: string, names: readonly string[]): string | null {
-  const near = closest(wanted, names);
-  return distance(wanted, near) <= Math.max(2, Math.floor(wanted.length / 3)) ? near : null;
+function didYouMean(near: string | undefined): string {
+  return near === undefined ? "" : ` Did you mean ${near}?`;
 }

@@ -82,7 +82,7 @@ describe("wrong arguments", () => {
     [["reprot", "a.yaml"], 'closeout has no command "reprot". Did you mean report?'],
     [["plan.yaml"], 'closeout has no command "plan.yaml". Did you mean closeout report plan.yaml?'],
     [["check", "a.yaml"], 'closeout has no command "check".\n'],
-    [["report"], "closeout report needs PLAN.\nUse it so: closeout report PLAN [options]"],
+    [["report"], "closeout report needs PLAN.\nUsage: closeout report PLAN [options]"],
     [["report", "a.yaml", "b.yaml"], "closeout report was given too many names."],
     [["report", "a.yaml", "--thread", "2"], "closeout report has no option --thread. Did you mean --threads?"],
     [["report", "a.yaml", "--thread=2"], "closeout report has no option --thread. Did you mean --threads?"],
@@ -92,7 +92,7 @@ describe("wrong arguments", () => {
     [["report", "a.yaml", "--threads", "none"], "--threads none: expected a whole number, 1 or more."],
     [["report", "a.yaml", "--threads", "0"], "--threads 0: expected a whole number, 1 or more."],
     [["report", "a.yaml", "--memory", "4"], "--memory 4: expected a size with its unit, such as 500MB or 4GB."],
-    [["schema", "log"], 'There is no schema of "log".\nUse it so: closeout schema [plan|report]'],
+    [["schema", "log"], 'There is no schema of "log".\nUsage: closeout schema [plan|report]'],
   ])("closeout %j: status 2, on stderr alone, without asking the library", async (argv, message) => {
     const { status, stdout, stderr, asked } = await command(argv);
     expect(stderr).toContain(message);
