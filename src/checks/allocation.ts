@@ -69,7 +69,7 @@ function asAnalysed(plan: Plan, reduction: Reduction, found: Split): Finding {
 }
 
 function evenSentence(plan: Plan, verb: string, { counts, p }: Split): string {
-  return `${verb} were ${groups(plan, counts)}: as near to the plan as chance makes it (${pText(p)}).`;
+  return `${verb} were ${groups(plan, counts)}, a split that chance can explain (${pText(p)}).`;
 }
 
 function unevenSentence(plan: Plan, verb: string, { counts, p }: Split): string {

@@ -6,7 +6,7 @@ import { asCheck, type Finding, passed } from "./finding.ts";
 import { rowsOn } from "./ledger.ts";
 import { byPAtMostCaution, byShare } from "./limits.ts";
 import type { Check } from "./types.ts";
-import { byChance, groupShares, perVariant } from "./words.ts";
+import { groupShares, ofDifference, perVariant } from "./words.ts";
 
 /** Rows that came more than once, by their event-id: how many, in which arm, and whether the copies agree. */
 export function duplicates(plan: Plan, reduction: Reduction): Check | null {
@@ -62,7 +62,7 @@ function byArm(plan: Plan, reduction: Reduction): Finding | null {
   if (p === null) return null;
   const { many } = plan.unitCalled;
   const figures = { units: perVariant(plan, withDuplicate), p };
-  const sentence = `Enrolled ${many} with a repeated row: ${groupShares(plan, withDuplicate, enrolled)}. ${byChance("so large a difference", p)}`;
+  const sentence = `Enrolled ${many} with a repeated row: ${groupShares(plan, withDuplicate, enrolled)}. ${ofDifference(p)}`;
   if (byPAtMostCaution(p) === "pass") return passed("by variant", sentence, figures);
   const remedy = `Find out why rows of one group come twice more often; where copies lack an event-id, what ${many} of that group did is counted too often.`;
   return { about: "by variant", result: "caution", strong: false, sentence, remedy, figures };

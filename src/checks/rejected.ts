@@ -6,7 +6,7 @@ import { asCheck, type Finding, passed } from "./finding.ts";
 import { rowsOn } from "./ledger.ts";
 import { byP, byShare } from "./limits.ts";
 import type { Check, CheckOutcome } from "./types.ts";
-import { byChance, groupShares, perVariant } from "./words.ts";
+import { groupShares, ofDifference, perVariant } from "./words.ts";
 
 const OUTCOME: Readonly<Record<ReturnType<typeof byShare>, CheckOutcome>> = {
   little: "pass",
@@ -48,7 +48,7 @@ function byArm(plan: Plan, reduction: Reduction): Finding | null {
   const figures = { units: perVariant(plan, withRejected), p };
   const counts = `Enrolled ${many} with a rejected row: ${groupShares(plan, withRejected, enrolled)}.`;
   const result = byP(p);
-  const sentence = `${counts} ${byChance("so large a difference", p)}`;
+  const sentence = `${counts} ${ofDifference(p)}`;
   if (result === "pass") return passed("by variant", sentence, figures);
   const remedy = `Find out why rows of one group are damaged more often, with rejects.csv; until then what ${many} of that group did is missing more often.`;
   return { about: "by variant", result, strong: false, sentence, remedy, figures };

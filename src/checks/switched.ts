@@ -6,7 +6,7 @@ import { asCheck, type Finding, passed } from "./finding.ts";
 import { sum } from "./ledger.ts";
 import { byPAtMostCaution, byShare } from "./limits.ts";
 import type { Check } from "./types.ts";
-import { byChance, groupShares, perVariant, units } from "./words.ts";
+import { groupShares, ofDifference, perVariant, units } from "./words.ts";
 
 /** Units whose rows name two variants of the plan: how many, and whether more of them began in one arm. */
 export function switched(plan: Plan, reduction: Reduction): Check | null {
@@ -38,7 +38,7 @@ function byArm(plan: Plan, reduction: Reduction): Finding | null {
   const p = armsAlike(having, enrolled);
   if (p === null) return null;
   const figures = { units: perVariant(plan, having), p };
-  const sentence = `By first variant, ${plan.unitCalled.many} seen in two: ${groupShares(plan, having, enrolled)}. ${byChance("so large a difference", p)}`;
+  const sentence = `By first variant, ${plan.unitCalled.many} seen in two: ${groupShares(plan, having, enrolled)}. ${ofDifference(p)}`;
   if (byPAtMostCaution(p) === "pass") return passed("by variant", sentence, figures);
   const remedy = `Find out why ${plan.unitCalled.many} leave one variant for another more often than the reverse; leaving them out would then make the groups unlike.`;
   return { about: "by variant", result: "caution", strong: false, sentence, remedy, figures };

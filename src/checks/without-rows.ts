@@ -6,7 +6,7 @@ import { asCheck, type Finding } from "./finding.ts";
 import { analysedUnits, sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
 import type { Check } from "./types.ts";
-import { byChance, groupShares, perVariant, units } from "./words.ts";
+import { groupShares, ofDifference, perVariant, units } from "./words.ts";
 
 /**
  * Metrics that leave out units without a value, one part each, named like the metric: a caution in any case, since only
@@ -30,7 +30,7 @@ function judge(plan: Plan, metric: Metric, leftOut: ByVariant, analysed: ByVaria
   const { many } = plan.unitCalled;
   const left = `${metric.name}: ${units(plan, n)} of ${count(sum(analysed))} (${percent(share)}) without a value ${n === 1 ? "is" : "are"} left out`;
   const byVariant = n === 0 ? "" : `: ${groupShares(plan, leftOut, analysed)}`;
-  const chance = p === null || differ === "pass" ? "" : ` ${byChance("so large a difference", p)}`;
+  const chance = p === null || differ === "pass" ? "" : ` ${ofDifference(p)}`;
   return {
     about: metric.name,
     result: differ === "fail" ? "fail" : "caution",

@@ -1,6 +1,7 @@
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { chanceText, count, list, percent, plural, pText, quoted } from "../words/index.ts";
+import { byP } from "./limits.ts";
 
 /** "1,204 visitors", in the plan's own words. */
 export function units(plan: Plan, n: number): string {
@@ -30,6 +31,11 @@ export function groupShares(plan: Plan, having: ByVariant, outOf: ByVariant): st
 /** "Chance alone gives so large a difference in about one test in 1,300 (p = 0.00077)." */
 export function byChance(what: string, p: number): string {
   return `Chance alone gives ${what} ${chanceText(p)} (${pText(p)}).`;
+}
+
+/** What chance has to say of a difference between groups, whether it is one or not. */
+export function ofDifference(p: number): string {
+  return byP(p) === "pass" ? `Chance can explain the difference (${pText(p)}).` : byChance("so large a difference", p);
 }
 
 /** Counts under the variants' names, as figures. */

@@ -1,5 +1,5 @@
 import type { Plan } from "../plan/types.ts";
-import { goodWord, metricOf } from "./measure.ts";
+import { goodWord, metricOf, ruleInWords } from "./measure.ts";
 import { type Told, told, unmeasured } from "./told.ts";
 import type { Effect, Zone } from "./types.ts";
 import { ruleOf } from "./zones.ts";
@@ -16,11 +16,9 @@ export function askedSentence(effect: Effect, plan: Plan): string {
   const asked =
     stated === null
       ? `Asked for: any proven gain, and ${goodWord(metric)} is better.`
-      : `Asked for: at least ${texts?.rule ?? "what the plan states"}.`;
-  const reason = unmeasured(effect, plan);
-  if (texts === null || reason !== null) {
-    return `${asked} Whether that is so cannot be told${reason === null ? "" : `, since ${reason}`}.`;
-  }
+      : `Asked for: at least ${ruleInWords(metric, stated)}.`;
+  // the sentence of the effect, which comes before, says why
+  if (texts === null || unmeasured(effect, plan) !== null) return `${asked} Whether that is so cannot be told.`;
   return `${asked} ${answer(effect, plan, texts, stated !== null)}`;
 }
 

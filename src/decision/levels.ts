@@ -1,20 +1,30 @@
 import type { Metric, Plan } from "../plan/types.ts";
 import { alike, quoted, rates } from "../words/index.ts";
-import { counts, metricOf } from "./measure.ts";
+import { counts, measure, metricOf } from "./measure.ts";
 import type { Effect } from "./types.ts";
 
 /** '13.2 of 100 visitors with "calendar" and 12.0 with "list"'; null when an arm has no figure. */
 export function levelsInWords(effect: Effect, plan: Plan): string | null {
   const { control, variant } = effect.contrast;
   if (control.mean === null || variant.mean === null) return null;
-  const { first, second } = written(metricOf(effect, plan), plan, variant.mean, control.mean);
+  const metric = metricOf(effect, plan);
+  // beside a difference per unit stand levels per unit
+  const asRates =
+    metric.summary === "proportion" || (perHundred(metric) && measure(effect, plan).scale.kind === "percent");
+  const { first, second } = written(metric, plan, variant.mean, control.mean, asRates);
   return `${first} with ${quoted(effect.variant)} and ${second} with ${quoted(effect.control)}`;
 }
 
-function written(metric: Metric, plan: Plan, variant: number, control: number): { first: string; second: string } {
+function written(
+  metric: Metric,
+  plan: Plan,
+  variant: number,
+  control: number,
+  asRates: boolean,
+): { first: string; second: string } {
   const many = metric.withoutRows === "leave-out" ? `${plan.unitCalled.many} with a value` : plan.unitCalled.many;
   const one = metric.withoutRows === "leave-out" ? `${plan.unitCalled.one} with a value` : plan.unitCalled.one;
-  if (metric.summary === "proportion" || (perHundred(metric) && Math.max(variant, control) < 1)) {
+  if (asRates && Math.max(variant, control) <= 1) {
     const { of, texts } = rates([variant, control]);
     const [first = "", second = ""] = texts;
     return { first: `${first} ${metric.summary === "proportion" ? "of" : "per"} ${of} ${many}`, second };

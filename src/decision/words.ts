@@ -1,5 +1,5 @@
 import type { Plan } from "../plan/types.ts";
-import { count, estimateInWords, type Interval, intervalInWords, MORE, type Scale } from "../words/index.ts";
+import { count, estimateInWords, type Interval, intervalInWords, MORE, quoted, type Scale } from "../words/index.ts";
 import { because } from "./absent.ts";
 import { levelsInWords } from "./levels.ts";
 import { absolute, amountText, counts, measure, metricOf, ruleInWords } from "./measure.ts";
@@ -42,7 +42,9 @@ export function guardrailSentence(effect: Effect, plan: Plan): string {
     if (effect.zone === "within")
       return surelyWorse(effect, plan) ? "Within the limit, but worse beyond doubt." : "Within the limit.";
     if (effect.zone === "beyond") return "Beyond the limit.";
-    return reason === null ? `Not settled: ${notRuledOut(effect, plan)}.` : `Not settled, since ${reason}.`;
+    return reason === null
+      ? `Not settled: ${notRuledOut(effect, plan)}.`
+      : `Not settled with ${quoted(effect.variant)}, since ${reason}.`;
   }
 }
 
@@ -70,7 +72,7 @@ export function absoluteSentence(effect: Effect, plan: Plan): string | null {
   const metric = metricOf(effect, plan);
   const { interval, scale, words } = absolute(effect, metric);
   const comparative = counts(metric) ? MORE : words;
-  if (measure(effect, plan).scale.kind !== "percent" || interval === null) return null;
+  if (measure(effect, plan).scale.kind !== "percent" || interval === null || interval.estimate === 0) return null;
   const label = intervalLabel(plan);
   const write = (shown: Interval, as: Scale) =>
     `${estimateInWords(shown, as, comparative)} (${label}: ${intervalInWords(shown, as, comparative)})`;

@@ -58,6 +58,10 @@ export const arbitraryLog: fc.Arbitrary<{ plan: Plan; reduction: Reduction }> = 
         copiesThatDiffer: Math.min(differ, duplicate),
         copiesOfOtherUnits: made.one ? Math.min(1, duplicate) : 0,
         missingEvents: made.missing ? ["booking"] : [],
+        events: [
+          { value: "search_opened", rows: 6000 },
+          { value: made.missing ? "bookings" : "booking", rows: 700 },
+        ],
         variants: [...variants.map(({ name }) => ({ value: name, rows: 10 })), { value: "calender", rows: 1 }],
       },
     });
