@@ -5,7 +5,7 @@ import { decimalAt, type Path, type YamlText } from "./yaml.ts";
 type Condition = WhereYaml[string];
 type Values = string | number | boolean | readonly (string | number | boolean)[];
 
-/** A `where` of the plan as a list of tests that must all hold, in the order written. */
+/** A `where` of the plan as a list of tests that must all hold; their order means nothing. */
 export function whereTests(where: WhereYaml | undefined, path: Path, yaml: YamlText): Where {
   return Object.entries(where ?? {}).flatMap(([column, condition]) =>
     columnTests(column, condition, [...path, column], yaml),

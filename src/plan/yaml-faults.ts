@@ -35,8 +35,11 @@ function spanOf({ code, message, pos }: YAMLError, text: string): readonly [numb
   if (code === "DUPLICATE_KEY")
     return [start, start + (/^(?:"[^"]*"|'[^']*'|[^:,}\s]*)/.exec(text.slice(start))?.[0].length ?? 1)];
   // an open quotation mark is noticed at the end of the text only
+  const indent = /^ */.exec(text.slice(start))?.[0].length ?? 0;
   const written = text.slice(0, start).trimEnd().length;
-  return message.startsWith("Missing closing") && start > written ? [Math.max(0, written - 1), written] : [start, end];
+  return message.startsWith("Missing closing") && start > written
+    ? [Math.max(0, written - 1), written]
+    : [start + indent, end + indent];
 }
 
 const WORDS: readonly (readonly [YAMLError["code"], RegExp, string])[] = [

@@ -8,6 +8,7 @@ import {
   LineCounter,
   type Pair,
   parseDocument,
+  type Range,
   type Scalar,
 } from "yaml";
 import { parseYamlNumber } from "./number.ts";
@@ -129,13 +130,13 @@ export function pathAt(yaml: YamlText, offset: number): Path {
   let node: unknown = yaml.document.contents;
   const path: (string | number)[] = [];
   for (;;) {
-    const inside: readonly { step: string | number | null; start: number; node: unknown }[] = isMap(node)
-      ? node.items.map((pair) => ({ step: keyText(pair), start: startOf(pair.key), node: pair.value }))
+    const inside: readonly { step: string | number | null; from: unknown; node: unknown }[] = isMap(node)
+      ? node.items.map((pair) => ({ step: keyText(pair), from: pair.key, node: pair.value }))
       : isSeq(node)
-        ? node.items.map((item, i) => ({ step: i, start: startOf(item), node: item }))
+        ? node.items.map((item, i) => ({ step: i, from: item, node: item }))
         : [];
-    const last = inside.findLast(({ start }) => start <= offset);
-    if (last === undefined || last.step === null) return path;
+    const last = inside.findLast(({ from }) => (rangeOf(from)?.[0] ?? offset + 1) <= offset);
+    if (last === undefined || last.step === null || (rangeOf(last.node)?.[2] ?? offset) <= offset) return path;
     path.push(last.step);
     node = last.node;
   }
@@ -159,8 +160,8 @@ function decimalText(node: Scalar): DecimalText | null {
   return decimal?.includes("e") ? null : decimal;
 }
 
-function startOf(node: unknown): number {
-  return isNode(node) && node.range ? node.range[0] : Number.POSITIVE_INFINITY;
+function rangeOf(node: unknown): Range | null {
+  return isNode(node) ? (node.range ?? null) : null;
 }
 
 function spanOfKey(pair: Pair): { span?: Span } {

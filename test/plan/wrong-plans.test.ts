@@ -1,0 +1,22 @@
+import { describe, expect, it } from "vitest";
+import { loadPlan } from "../../src/plan/index.ts";
+import { messageOf } from "./plans.ts";
+import { expectation, type WrongPlan } from "./wrong/case.ts";
+import { COMBINATIONS } from "./wrong/combinations.ts";
+import { SHAPE } from "./wrong/shape.ts";
+import { VALUES } from "./wrong/values.ts";
+import { YAML } from "./wrong/yaml.ts";
+
+const tables: readonly (readonly [string, readonly WrongPlan[]])[] = [
+  ["a plan whose shape is wrong", SHAPE],
+  ["a plan whose values are wrong", VALUES],
+  ["a plan whose keys do not go together", COMBINATIONS],
+  ["a text that is no plan", YAML],
+];
+
+describe.each(tables)("%s", (_, table) => {
+  it.each(table.map((wrong) => [wrong.title, wrong] as const))("says all that is wrong, and where: %s", (__, wrong) => {
+    const { text, message } = expectation(wrong);
+    expect(messageOf(loadPlan(text))).toBe(message);
+  });
+});

@@ -1,0 +1,80 @@
+import type { WrongPlan } from "./case.ts";
+
+const EXPECTED_KEYS = "Expected keys such as experiment:, question:, log:, variants: and metrics:.";
+
+/** Texts that are no YAML, or no plan. */
+export const YAML: readonly WrongPlan[] = [
+  { title: "a list", plan: "«- a»\n- b\n", says: [["", `This is no plan. ${EXPECTED_KEYS}`]] },
+  { title: "a word", plan: "«hello»\n", says: [["", `This is no plan. ${EXPECTED_KEYS}`]] },
+  { title: "a comment only", plan: "«#» to be written\n", says: [["", `The plan is empty. ${EXPECTED_KEYS}`]] },
+  {
+    title: "keys that stand twice, the second shown, the rest checked all the same",
+    plan: {
+      experiment: "experiment: a\n«experiment»: b",
+      filters: "filters: [{name: f, drop: rows, where: {x: 1, «'x'»: 2}}]",
+      planned: "planned: {units: «0»}",
+    },
+    says: [
+      ["", "This key stands here a second time. Keep one of the two."],
+      ["filters, f", "This key stands here a second time. Keep one of the two."],
+      ["planned", "Expected a whole number above 0."],
+    ],
+  },
+  {
+    title: "a colon inside a text",
+    plan: { question: "question: «D»oes it raise: bookings?" },
+    says: [["question", 'A second key stands on this line. Put text with a colon in it in quotes: "…: …".']],
+  },
+  {
+    title: "a bracket that stays open",
+    plan: { experiment: "experiment: {a: 1", question: "«q»uestion: x" },
+    says: [["", "A bracket that opened above is not closed before this line. Close it with ] or }."]],
+  },
+  {
+    title: "a quotation mark that stays open",
+    plan: 'experiment: "fares\nquestion: do they ris«e»\n',
+    says: [["", "A quotation mark that opened above is never closed. Close it."]],
+  },
+  {
+    title: "an indent that fits nothing, twice, and nothing said of the keys",
+    plan: "unit-called:\n  one: a\n «m»any: b\nfollow-up:\n  days: 1\n «i»ncomplete: keep\n",
+    says: [
+      ["", "This line is indented unlike the ones that it belongs to. Let keys of one mapping begin in one column."],
+      ["", "This line is indented unlike the ones that it belongs to. Let keys of one mapping begin in one column."],
+    ],
+  },
+  {
+    title: "a text that begins with a mark of YAML's own",
+    plan: "experiment: «%» of visitors\n",
+    says: [["", "A text cannot begin with this character. Put the text in quotes."]],
+  },
+  {
+    title: "a missing comma",
+    plan: "unit-called: {one: «a many: b»}\n",
+    says: [["unit-called", "Inside braces keys are set apart by commas. Look for a missing comma."]],
+  },
+  {
+    title: "a second document",
+    plan: { metrics: "metrics: [{name: B, role: primary, summary: mean, of: {}}]", x: "«---»", y: "experiment: b" },
+    says: [["", "A plan is one YAML document. Remove this line and what follows, or make that a file of its own."]],
+  },
+  {
+    title: "a tag, and an alias of nothing",
+    plan: { experiment: "experiment: «!x» a", question: "question: «*bookings»" },
+    says: [
+      ["", "A plan knows no YAML tags. Remove the word that begins with an exclamation mark."],
+      ["", "This alias names no anchor. Put text that begins with * in quotes."],
+    ],
+  },
+  {
+    title: "keys that are no text",
+    plan: {
+      experiment: "experiment: a\n? «[a, b]»\n: c",
+      filters: "filters: [{name: f, drop: rows, where: {x: 1, «__proto__»: 1}}]",
+    },
+    says: [
+      ["", "A key must be a text."],
+      ["filters, f", "No column or key can have this name."],
+    ],
+  },
+];
