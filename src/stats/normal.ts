@@ -1,6 +1,6 @@
 import erfc from "@stdlib/math-base-special-erfc";
 import erfcinv from "@stdlib/math-base-special-erfcinv";
-import { jStat } from "jstat";
+import jstat from "jstat"; // CommonJS: Node finds no named exports in it
 
 /**
  * Upper tail of the standard normal distribution, P(Z > z) = erfc(z / sqrt 2) / 2.
@@ -27,5 +27,5 @@ export function normalTwoSided(z: number): number {
  * @param alpha in (0, 1)
  */
 export function normalCritical(alpha: number): number {
-  return alpha >= 0.001 && alpha <= 0.9 ? -jStat.normal.inv(alpha / 2, 0, 1) : Math.SQRT2 * erfcinv(alpha);
+  return alpha >= 0.001 && alpha <= 0.9 ? -jstat.normal.inv(alpha / 2, 0, 1) : Math.SQRT2 * erfcinv(alpha);
 }
