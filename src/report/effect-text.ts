@@ -1,38 +1,39 @@
+import { absolute, amountText, measure, metricOf, signedRule } from "../decision/measure.ts";
 import type { Effect, Zone } from "../decision/types.ts";
-import type { Amount, Metric, Plan, Role } from "../plan/types.ts";
+import { ruleOf } from "../decision/zones.ts";
+import type { Metric, Plan, Role } from "../plan/types.ts";
 import {
   alike,
   type Interval,
+  MINUS,
   percent,
-  plain,
-  planPercent,
   rates,
   type Scale,
   signedEstimate,
   signedInterval,
 } from "../words/index.ts";
 
-/** What a metric is for, in the owner's words (PAGES). */
+/** What a metric is for, as the reader's tables group them (PAGES). */
 export const PURPOSE: Readonly<Record<Role, string>> = {
   primary: "decides",
   guardrail: "must not get worse",
   secondary: "for information",
 };
 
-/** One effect as cells of a table: every table, the terminal and the summary take their figures from here. */
+/** One effect as cells of a table: page, terminal and summary take their figures from here, so that they agree. */
 export interface EffectText {
-  /** Control and variant, in digits that tell them apart: "12.0%", "13.2%". */
+  /** Control and variant, in digits that tell them apart: "12.0%" and "13.2%", "96.40" and "103.90". */
   readonly levels: readonly [string, string];
-  /** What the levels are counted on, where they are not plain: "per 100 visitors"; else "". */
-  readonly per: string;
-  /** In percent of the control's level; null where the relative difference is not shown. */
+  /** What follows the levels: "kr", "per 100"; else "". */
+  readonly levelsUnit: string;
+  /** The interval that is held against the plan: relative, or the difference where the plan's amount is absolute. */
+  readonly shown: Signed;
+  /** The difference without its unit, for a column that names it: shares in percentage points. */
+  readonly bare: Signed;
+  /** In percent of the control's level; null where it is not shown. */
   readonly relative: Signed | null;
-  /** In the metric's own unit. */
-  readonly difference: Signed;
-  /** "asked +5%", "limit +5%", "". */
-  readonly asked: string;
-  /** "above 5%", "within 5%", "not settled", "for information". */
-  readonly zone: string;
+  /** "asked +5%: reached", "limit +5%: not settled", "better"; "" for a measure for information. */
+  readonly mark: string;
 }
 export interface Signed {
   readonly estimate: string;
@@ -41,118 +42,126 @@ export interface Signed {
 
 /** The text of a figure that does not exist. */
 export const NONE = "\u2013";
+const NO_INTERVAL: Signed = { estimate: NONE, interval: "no interval" };
 
-export function effectText(effect: Effect, metric: Metric, plan: Plan): EffectText {
-  const { contrast } = effect;
-  const { levels, per } = levelsText([contrast.control.mean, contrast.variant.mean], metric, plan);
-  const amount = metric.worthwhile ?? metric.margin;
-  const mark = amount === null ? [] : [signedAmount(amount, metric)];
+export function effectText(effect: Effect, plan: Plan): EffectText {
+  const metric = metricOf(effect, plan);
+  const { control, variant, relative } = effect.contrast;
+  const { levels, unit } = levelsText([control.mean, variant.mean], metric);
+  const own = measure(effect, plan);
+  const rule = ruleOf(metric);
+  const marks = (kind: "relative" | "absolute") => (rule?.kind === kind ? [signedRule(metric, rule)] : []);
+  const difference = absolute(effect, metric);
+  const bare = difference.interval === null ? NO_INTERVAL : bareText(difference.interval, metric, marks("absolute"));
   return {
     levels: [levels[0] ?? NONE, levels[1] ?? NONE],
-    per,
-    relative:
-      "absent" in contrast.relative
-        ? null
-        : signedText(contrast.relative, { kind: "percent" }, amount?.kind === "relative" ? mark : []),
-    difference: signedText(contrast.difference, scaleOf(metric), amount?.kind === "absolute" ? mark : []),
-    asked:
-      amount === null ? "" : `${metric.role === "guardrail" ? "limit" : "asked"} ${signedAmountText(amount, metric)}`,
-    zone: zoneText(effect.zone, metric),
+    levelsUnit: unit,
+    shown: own.scale.kind === "percent" ? signedText(own.interval, own.scale, own.marks) : withUnit(bare, metric),
+    bare,
+    relative: "absent" in relative ? null : signedText(relative, { kind: "percent" }, marks("relative")),
+    mark: markText(effect, plan),
   };
 }
 
-function signedText(
-  {
-    estimate,
-    low,
-    high,
-  }: { readonly estimate: number | null; readonly low: number | null; readonly high: number | null },
-  scale: Scale,
-  marks: readonly number[],
-): Signed {
-  if (estimate === null) return { estimate: NONE, interval: NONE };
-  const interval: Interval = { estimate, low, high };
+function signedText(interval: Interval | null, scale: Scale, marks: readonly number[]): Signed {
+  if (interval === null) return NO_INTERVAL;
   return { estimate: signedEstimate(interval, scale, marks), interval: signedInterval(interval, scale, marks) };
 }
 
-/** How a metric's differences are written: shares in percentage points, all else in the metric's unit. */
-export function scaleOf(metric: Metric): Scale {
-  return metric.summary === "proportion" ? { kind: "points" } : { kind: "amount", unit: metric.unitOfMeasure };
+/** A difference without its unit; shares in percentage points. */
+export function bareText({ estimate, low, high }: Interval, metric: Metric, marks: readonly number[]): Signed {
+  const factor = metric.summary === "proportion" ? 100 : 1;
+  const times = (end: number | null) => (end === null ? null : end * factor);
+  return signedText(
+    { estimate: estimate * factor, low: times(low), high: times(high) },
+    { kind: "amount", unit: null },
+    marks.map((mark) => mark * factor),
+  );
 }
 
-/** The level of each arm, side by side. A mean below 1 of things counted reads better on 100 units: "8.1 per 100". */
+/** The unit once, behind the estimate: "+9.6 kr" and "+5.1 to +14.2". */
+function withUnit({ estimate, interval }: Signed, metric: Metric): Signed {
+  return { estimate: `${estimate} ${unitText(metric)}`.trimEnd(), interval };
+}
+
+/** The unit of a metric's differences in a narrow cell; "points" are percentage points. */
+function unitText(metric: Metric): string {
+  return metric.summary === "proportion" ? "points" : (metric.unitOfMeasure ?? "");
+}
+
+/** The level of each arm side by side. A mean below 1 of things counted reads better on 100 units: "8.1 per 100". */
 export function levelsText(
   means: readonly (number | null)[],
   metric: Metric,
-  plan: Plan,
-): { readonly levels: readonly string[]; readonly per: string } {
+): { readonly levels: readonly string[]; readonly unit: string } {
   const known = means.filter((mean) => mean !== null);
+  if (known.length === 0) return { levels: means.map(() => NONE), unit: "" };
   if (metric.summary === "proportion") {
     const { of, texts } = rates(known);
-    return { levels: spread(means, of === "100" ? texts.map((text) => `${text}%`) : known.map(percent)), per: "" };
+    return { levels: inPlace(means, of === "100" ? texts.map((text) => `${text}%`) : known.map(percent)), unit: "" };
   }
   if (isCount(metric) && known.every((mean) => mean >= 0 && mean < 1)) {
     const { of, texts } = rates(known);
-    return { levels: spread(means, texts), per: `per ${of} ${plan.unitCalled.many}` };
+    return { levels: inPlace(means, texts), unit: `per ${of}` };
   }
-  const unit = metric.unitOfMeasure === null ? "" : ` ${metric.unitOfMeasure}`;
-  return {
-    levels: spread(
-      means,
-      alike(known).map((text) => text + unit),
-    ),
-    per: "",
-  };
+  return { levels: inPlace(means, alike(known)), unit: metric.unitOfMeasure ?? "" };
 }
 
 function isCount(metric: Metric): boolean {
   return metric.summary === "mean" && metric.unitOfMeasure === null && metric.of.aggregate.kind === "count";
 }
 
-/** Texts of the known figures, put back in their places. */
-function spread(means: readonly (number | null)[], texts: readonly string[]): string[] {
+/** Texts of the figures that exist, put back in their places. */
+function inPlace(figures: readonly (number | null)[], texts: readonly string[]): string[] {
   let next = 0;
-  return means.map((mean) => (mean === null ? NONE : (texts[next++] ?? NONE)));
+  return figures.map((figure) => (figure === null ? NONE : (texts[next++] ?? NONE)));
 }
 
-/** A worthwhile effect or margin with its sign: a gain to reach, or a harm not to pass. */
-export function signedAmount(amount: Amount, metric: Metric): number {
-  const towardsHigher = (metric.goodIs === "higher") === (metric.role !== "guardrail");
-  return towardsHigher ? amount.value : -amount.value;
+/** Figures side by side, all with the same places. */
+export function sideBySide(figures: readonly (number | null)[]): string[] {
+  const known = figures.filter((figure) => figure !== null);
+  return inPlace(figures, known.length === 0 ? [] : alike(known));
 }
 
-function signedAmountText(amount: Amount, metric: Metric): string {
-  return (signedAmount(amount, metric) > 0 ? "+" : "\u2212") + amountText(amount, metric);
+/** "asked +5%: reached", "limit +5%: not settled": the tick of the forest plot, and how the interval stands to it. */
+function markText(effect: Effect, plan: Plan): string {
+  if (effect.role === "secondary") return "";
+  const metric = metricOf(effect, plan);
+  const rule = ruleOf(metric);
+  if (rule === null) return STANDS_TO_ZERO[effect.zone] ?? "not settled";
+  const sign = signedRule(metric, rule) > 0 ? "+" : MINUS;
+  const amount = amountText(metric, rule).replace("percentage points", "points");
+  return `${effect.role === "guardrail" ? "limit" : "asked"} ${sign}${amount}: ${STANDS[effect.zone]}`;
 }
 
-/** "5%", "0.2 percentage points", "2 kr". */
-export function amountText(amount: Amount, metric: Metric): string {
-  if (amount.kind === "relative") return planPercent(amount.value);
-  if (metric.summary === "proportion") return `${plain(amount.value * 100)} percentage points`;
-  return plain(amount.value) + (metric.unitOfMeasure === null ? "" : ` ${metric.unitOfMeasure}`);
+const STANDS: Readonly<Record<Zone, string>> = {
+  worthwhile: "reached",
+  better: "not settled",
+  worse: "worse",
+  "too-small": "not reached",
+  "no-worthwhile-gain": "not reached",
+  "not-settled": "not settled",
+  within: "within",
+  beyond: "beyond",
+};
+const STANDS_TO_ZERO: { readonly [zone in Zone]?: string } = { better: "better", worse: "worse" };
+
+/** The end of a table's row in words: how the effect stands to what the plan says of it. */
+export function verdictText(effect: Effect, plan: Plan): string {
+  if (effect.role === "secondary") return PURPOSE.secondary;
+  const metric = metricOf(effect, plan);
+  const rule = ruleOf(metric);
+  if (rule === null) return STANDS_TO_ZERO[effect.zone] ?? "not settled";
+  return VERDICTS[effect.zone](amountText(metric, rule));
 }
 
-/** Where the interval lies against the rule, in few words. */
-export function zoneText(zone: Zone, metric: Metric): string {
-  if (metric.role === "secondary") return PURPOSE.secondary;
-  const amount = metric.worthwhile ?? metric.margin;
-  const limit = amount === null ? "" : amountText(amount, metric);
-  switch (zone) {
-    case "worthwhile":
-      return `above ${limit}`;
-    case "better":
-      return limit === "" ? "better" : `better; ${limit} not settled`;
-    case "worse":
-      return "worse";
-    case "too-small":
-      return `better, but below ${limit}`;
-    case "no-worthwhile-gain":
-      return `below ${limit}`;
-    case "within":
-      return `within ${limit}`;
-    case "beyond":
-      return `beyond ${limit}`;
-    case "not-settled":
-      return "not settled";
-  }
-}
+const VERDICTS: Readonly<Record<Zone, (amount: string) => string>> = {
+  worthwhile: (amount) => `better by more than ${amount}`,
+  better: (amount) => `better; whether by ${amount} is not settled`,
+  worse: () => "worse",
+  "too-small": (amount) => `better, but by less than ${amount}`,
+  "no-worthwhile-gain": (amount) => `not better by ${amount}`,
+  "not-settled": () => "not settled",
+  within: (amount) => `within its limit of ${amount}`,
+  beyond: (amount) => `beyond its limit of ${amount}`,
+};

@@ -3,12 +3,6 @@ import type { Reduction } from "../engine/types.ts";
 import type { Metric, Part, Plan, Variant } from "../plan/types.ts";
 import { type Day, dateSpan, list, plain, plural } from "../words/index.ts";
 
-export function metricOf(plan: Plan, name: string): Metric {
-  const metric = plan.metrics.find((candidate) => candidate.name === name);
-  if (metric === undefined) throw new Error(`an effect is of the metric "${name}", which the plan does not have`);
-  return metric;
-}
-
 export function controlOf(plan: Plan): Variant {
   const control = plan.variants.find((variant) => variant.isControl);
   if (control === undefined) throw new Error("the plan has no control");

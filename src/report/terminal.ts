@@ -1,9 +1,9 @@
 import type { Effect } from "../decision/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { count } from "../words/index.ts";
-import { effectText, PURPOSE } from "./effect-text.ts";
-import { controlOf, metricOf } from "./plan-words.ts";
-import { answers } from "./sections/decision.ts";
+import { effectText, verdictText } from "./effect-text.ts";
+import { controlOf } from "./plan-words.ts";
+import { answers, findings } from "./sections/decision.ts";
 import type { ReportInputs, TerminalPaths } from "./types.ts";
 
 const WIDTH = 100;
@@ -20,7 +20,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
     printable(plan.experiment),
     "",
     ...wrapped(conclusion.sentence),
-    ...conclusion.reasons.flatMap((reason) => wrapped(reason)),
+    ...findings(inputs).flatMap((sentence) => wrapped(sentence)),
     "",
     ...table,
     ...labelled("Data", data?.answer ?? ""),
@@ -43,11 +43,11 @@ function effectTable(effects: readonly Effect[], plan: Plan): string[] {
     const rows = effects
       .filter((effect) => effect.variant === name)
       .map((effect) => {
-        const metric = metricOf(plan, effect.metric);
-        const text = effectText(effect, metric, plan);
-        const { estimate, interval } = text.relative ?? text.difference;
-        const zone = effect.role === "secondary" ? PURPOSE.secondary : text.zone;
-        return [effect.metric, ...text.levels, estimate, interval, zone].map(printable);
+        const { levels, levelsUnit, shown } = effectText(effect, plan);
+        const [before, after] = levels.map((level) => `${level} ${levelsUnit}`.trimEnd());
+        return [effect.metric, before, after, shown.estimate, shown.interval, verdictText(effect, plan)].map((cell) =>
+          printable(cell ?? ""),
+        );
       });
     const head = ["", control, name, "difference", "95% interval", ""].map(printable);
     return [...(i === 0 ? [] : [""]), ...aligned([head, ...rows])];

@@ -1,3 +1,4 @@
+import { placed } from "../../src/decision/index.ts";
 import type { Effect, Zone } from "../../src/decision/types.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import type { ReportInputs } from "../../src/report/types.ts";
@@ -231,10 +232,5 @@ function severalEffect(metric: Metric, m: number, variant: string, v: number): E
   const pair = arms[m];
   if (pair === undefined) throw new Error(`no arms for metric ${m}`);
   const contrast = handContrast(pair[0], pair[1], metric.role === "secondary" ? undefined : z);
-  const zones: Record<string, Zone> = {
-    primary: v === 2 ? "not-settled" : "better",
-    guardrail: "within",
-    secondary: "better",
-  };
-  return { ...effectOf(metric, variant, contrast, zones[metric.role] ?? "not-settled") };
+  return { ...effectOf(metric, variant, contrast, "not-settled"), ...placed(metric, contrast) };
 }

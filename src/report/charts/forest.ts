@@ -27,7 +27,7 @@ const HEIGHT = 400;
 const MIDDLE = HEIGHT / 2;
 const TICK = 9;
 const SQUARE = 64;
-const AXIS_HEIGHT = 24;
+const AXIS_HEIGHT = 26;
 const MARGIN = 0.05;
 
 /** From the rows that decide: every estimate, bounded end and mark, zero always among them. */

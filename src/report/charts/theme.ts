@@ -7,7 +7,7 @@ export const theme = {
   quiet: "var(--quiet)",
   rule: "var(--rule)",
   font: "inherit",
-  letters: 11,
+  letters: 13,
 } as const;
 
 /** How a variant is told apart: first by its name at the line, then by the line's dashes, then by the square's colour. */

@@ -1,5 +1,5 @@
 import type { Check, CheckOutcome, Figure } from "../../checks/types.ts";
-import { capital, list, number, plural } from "../../words/index.ts";
+import { capital, list, MINUS, number, plural } from "../../words/index.ts";
 
 /** Section 3: can the data be trusted? Failed checks first, then cautions, the strong ones before the others. */
 export interface ChecksSection {
@@ -112,12 +112,23 @@ function isRecord(figure: Figure): figure is { readonly [name: string]: Figure }
 }
 
 function figureText(figure: Figure): string {
-  if (typeof figure === "number")
-    return Math.abs(figure) < 1e-4 && figure !== 0 ? figure.toExponential(2) : number(figure);
+  if (typeof figure === "number") return figure !== 0 && Math.abs(figure) < 1e-4 ? tiny(figure) : number(figure);
   if (typeof figure === "boolean") return figure ? "yes" : "no";
   return figure === null ? "does not exist" : String(figure);
 }
 
+/** "2.96 × 10⁻¹²". */
+function tiny(figure: number): string {
+  const [digits = "", exponent = ""] = figure.toExponential(2).split("e-");
+  return `${digits.replace("-", MINUS)} \u00d7 10\u207b${[...exponent].map((digit) => SUPERSCRIPTS[Number(digit)]).join("")}`;
+}
+const SUPERSCRIPTS = [..."\u2070\u00b9\u00b2\u00b3\u2074\u2075\u2076\u2077\u2078\u2079"];
+
+const FIGURE_NAMES: Readonly<Record<string, string>> = { chiSquare: "chi-square", df: "degrees of freedom" };
+
+/** "copiesThatDiffer": "copies that differ". */
 function spaced(key: string): string {
+  const known = FIGURE_NAMES[key];
+  if (known !== undefined) return known;
   return key.replace(/([a-z])([A-Z])/g, (_, before, letter) => `${before} ${letter.toLowerCase()}`);
 }

@@ -24,7 +24,6 @@ export interface LedgerLine {
   readonly line: string;
   readonly rows: string;
   readonly share: string;
-  readonly counted: boolean;
 }
 
 export function countedSection(plan: Plan, reduction: Reduction): CountedSection {
@@ -36,7 +35,6 @@ export function countedSection(plan: Plan, reduction: Reduction): CountedSection
       line: rowLine(id, plan),
       rows: count(rows),
       share: reduction.rowsRead === 0 ? NONE : percent(rows / reduction.rowsRead),
-      counted: id === "in-follow-up",
     })),
     rowsRead: count(reduction.rowsRead),
     rejectReasons: reduction.rejectReasons.map(({ reason, rows }) => ({ reason, rows: count(rows) })),

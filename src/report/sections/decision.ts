@@ -1,5 +1,13 @@
+import {
+  askedSentence,
+  type Conclusion,
+  type Effect,
+  effectSentence,
+  guardrailSentence,
+  nextSentences,
+} from "../../decision/index.ts";
 import type { Plan } from "../../plan/types.ts";
-import { count } from "../../words/index.ts";
+import { count, list } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
 import { mostImportant, tallyText } from "./checks.ts";
 import { type ForestTable, forestTable } from "./forest.ts";
@@ -7,10 +15,18 @@ import { type ForestTable, forestTable } from "./forest.ts";
 /** Section 1, the owner's page. */
 export interface DecisionSection {
   readonly sentence: string;
+  /** What was found, was it asked for, did anything get worse. */
   readonly paragraphs: readonly string[];
   /** Null on an undecidable report, where no estimate stands on this page. */
   readonly forest: ForestTable | null;
-  readonly answers: readonly { readonly question: string; readonly answer: string }[];
+  readonly afterForest: readonly string[];
+  /** Every reason with its figures, where the paragraphs do not tell them all. */
+  readonly reasons: readonly string[];
+  readonly answers: readonly Answer[];
+}
+export interface Answer {
+  readonly question: string;
+  readonly answer: string;
 }
 
 export async function decisionSection(inputs: ReportInputs): Promise<DecisionSection> {
@@ -18,28 +34,72 @@ export async function decisionSection(inputs: ReportInputs): Promise<DecisionSec
   const undecidable = conclusion.decision === "undecidable";
   return {
     sentence: conclusion.sentence,
-    paragraphs: conclusion.reasons,
+    paragraphs: findings(inputs),
     forest: undecidable || effects.length === 0 ? null : await forestTable(effects, plan),
+    afterForest: nextSentences(plan, effects, conclusion, inputs.reduction),
+    reasons: plan.variants.length > 2 && !undecidable ? conclusion.reasons : [],
     answers: answers(inputs),
   };
 }
 
-/** What an owner asks next, each with its answer; the summary gives the same. */
-export function answers(inputs: ReportInputs): DecisionSection["answers"] {
+/**
+ * What page one tells in sentences: the adopted variant's effects, or the only one's. With several variants and none
+ * adopted nothing stands before the picture; why nothing can be decided is told by the reasons.
+ */
+export function findings({ plan, effects, conclusion }: ReportInputs): readonly string[] {
+  if (conclusion.decision === "undecidable") return conclusion.reasons;
+  const variant = inFocus(plan, conclusion);
+  const own = effects.filter((effect) => effect.variant === variant);
+  const primaries = own.filter((effect) => effect.role === "primary");
   return [
-    { question: "Can the data be trusted?", answer: trustText(inputs) },
-    { question: "Counted", answer: countedText(inputs) },
-    ...limits(inputs.plan),
+    ...primaries.flatMap((effect) => [effectSentence(effect, plan), askedSentence(effect, plan)]),
+    ...guardrails(
+      own.filter((effect) => effect.role === "guardrail"),
+      plan,
+    ),
   ];
 }
 
-function trustText({ checks }: ReportInputs): string {
-  const worst = mostImportant(checks);
+function inFocus(plan: Plan, { variant }: Conclusion): string | null {
+  if (variant !== null) return variant;
+  const [only, ...more] = plan.variants.filter((candidate) => !candidate.isControl);
+  return only !== undefined && more.length === 0 ? only.name : null;
+}
+
+const MOST_SENTENCES = 3;
+
+/** Each in a sentence while they are few; else those that held are only named, and the others keep their sentences. */
+function guardrails(effects: readonly Effect[], plan: Plan): string[] {
+  if (effects.length <= MOST_SENTENCES) return effects.map((effect) => guardrailSentence(effect, plan));
+  const held = effects.filter((effect) => effect.zone === "within");
+  const others = effects.filter((effect) => effect.zone !== "within");
+  const names = held.length === 0 ? [] : [`Within their limits: ${list(held.map(({ metric }) => metric))}.`];
+  return [...others.map((effect) => guardrailSentence(effect, plan)), ...names];
+}
+
+/** What an owner asks next, each with its answer; the summary gives the same. */
+export function answers(inputs: ReportInputs): Answer[] {
+  const { limits } = inputs.plan.texts;
+  return [
+    { question: "Can the data be trusted?", answer: trustText(inputs) },
+    { question: "Counted:", answer: countedText(inputs) },
+    ...(limits === null ? [] : [{ question: "Not answered by this test:", answer: ended(limits) }]),
+  ];
+}
+
+/** A text from the plan as a sentence of the page. */
+function ended(text: string): string {
+  return /[.!?\u2026]$/.test(text.trimEnd()) ? text : `${text.trimEnd()}.`;
+}
+
+/** The tally, and the caution that matters most; what stops a decision is told above it already. */
+function trustText({ checks, conclusion }: ReportInputs): string {
   const tally = tallyText(checks);
+  const open = checks.filter((check) => check.result !== "pass");
+  const told = conclusion.decision === "undecidable" ? open.filter((check) => check.result !== "fail") : open;
+  const worst = mostImportant(told);
   if (worst === null) return `${tally}.`;
-  const [cautions, failed] = [checks.filter((c) => c.result === "caution"), checks.filter((c) => c.result === "fail")];
-  const one = failed.length + cautions.length === 1;
-  return one ? `${tally}: ${worst.sentence}` : `${tally}. What matters most: ${worst.sentence}`;
+  return told.length === 1 ? `${tally}: ${worst.sentence}` : `${tally}; what matters most: ${worst.sentence}`;
 }
 
 function countedText({ plan, reduction }: ReportInputs): string {
@@ -48,8 +108,4 @@ function countedText({ plan, reduction }: ReportInputs): string {
   const { many } = plan.unitCalled;
   const rest = left === 0 ? "None was left out." : `The other ${count(left)} are listed by reason in section 4.`;
   return `${count(counted)} of ${count(reduction.unitsSeen)} ${many}. ${rest}`;
-}
-
-function limits({ texts }: Plan) {
-  return texts.limits === null ? [] : [{ question: "Not answered by this test", answer: texts.limits }];
 }

@@ -1,12 +1,14 @@
+import { absolute, metricOf, signedRule } from "../../decision/measure.ts";
 import type { Effect } from "../../decision/types.ts";
+import { ruleOf } from "../../decision/zones.ts";
 import type { Plan, Role } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
 import { capital, plain, planPercent, signedPercent } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type ForestAxis, type ForestRow, forestAxis, forestScale, forestStrip } from "../charts/forest.ts";
 import { lineStyle } from "../charts/theme.ts";
-import { type EffectText, effectText, NONE, PURPOSE, signedAmount } from "../effect-text.ts";
-import { controlOf, metricOf } from "../plan-words.ts";
+import { type EffectText, effectText, NONE, PURPOSE } from "../effect-text.ts";
+import { controlOf } from "../plan-words.ts";
 
 /** The forest plot as a table: words and figures are text of the page, each row's line is a drawing of its own. */
 export interface ForestTable {
@@ -28,6 +30,8 @@ export interface ForestGroup {
 }
 export interface ForestTableRow {
   readonly metric: string;
+  /** The row before has the same metric: its name need not be seen twice. */
+  readonly again: boolean;
   /** "" where the plan has one variant beside the control: the heading names it. */
   readonly variant: string;
   /** "12.0% → 13.2%". */
@@ -62,8 +66,9 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
       const row = rows.get(effect) ?? null;
       tableRows.push({
         metric: effect.metric,
+        again: tableRows.at(-1)?.metric === effect.metric,
         variant: others.length === 1 ? "" : effect.variant,
-        ...rowTexts(effectText(effect, metricOf(plan, effect.metric), plan)),
+        ...rowTexts(effectText(effect, plan)),
         drawing:
           row === null ? null : await draw(forestStrip(row, axis), `forest-${ordered.indexOf(effect) + 1}`, null),
       });
@@ -95,12 +100,11 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
 }
 
 function rowTexts(text: EffectText) {
-  const { estimate, interval } = text.relative ?? text.difference;
   return {
-    levels: `${text.levels[0]} \u2192 ${text.levels[1]}${text.per === "" ? "" : ` ${text.per}`}`,
-    estimate,
-    interval: interval === "" ? "" : `(${interval})`,
-    asked: text.asked === "" ? "" : text.asked,
+    levels: `${text.levels.join(" \u2192 ")} ${text.levelsUnit}`.trimEnd(),
+    estimate: text.shown.estimate,
+    interval: `(${text.shown.interval})`,
+    asked: text.mark,
   };
 }
 
@@ -130,19 +134,26 @@ function sixDigits(figure: number | null): string {
   return figure === null ? NONE : plain(Number(figure.toPrecision(6)));
 }
 
-/** Null where the relative difference is not shown: the row stands as text. */
+/**
+ * Null where the relative difference is not shown: the row stands as text. Where the plan's amount is absolute, the
+ * interval held against it is drawn, over the control's level, so that line and tick agree with the verdict.
+ */
 function forestRow(effect: Effect, plan: Plan): ForestRow | null {
   const { relative, control } = effect.contrast;
-  if ("absent" in relative) return null;
-  const metric = metricOf(plan, effect.metric);
-  const amount = metric.worthwhile ?? metric.margin;
+  if ("absent" in relative || control.mean === null) return null;
+  const metric = metricOf(effect, plan);
+  const rule = ruleOf(metric);
+  const difference = absolute(effect, metric).interval;
+  const level = control.mean;
+  const over = (end: number | null) => (end === null ? null : end / level);
+  const drawn =
+    rule?.kind === "absolute" && difference !== null
+      ? { estimate: difference.estimate / level, low: over(difference.low), high: over(difference.high) }
+      : relative;
   const others = plan.variants.filter((variant) => !variant.isControl);
-  // an absolute amount has its place on this axis as a share of the control's level
-  const share = amount?.kind === "absolute" ? 1 / (control.mean ?? Number.NaN) : 1;
-  const mark = amount === null ? null : signedAmount(amount, metric) * share;
   return {
-    relative,
-    mark: mark === null || !Number.isFinite(mark) ? null : mark,
+    relative: drawn,
+    mark: rule === null ? null : signedRule(metric, rule) / (rule.kind === "absolute" ? level : 1),
     decides: effect.role !== "secondary",
     style: lineStyle(
       others.findIndex((variant) => variant.name === effect.variant),

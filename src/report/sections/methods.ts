@@ -77,7 +77,7 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
       when: true,
       name: "Difference",
       how: `Variant minus control, of means over ${many}; two-sided ${confidence} interval by the normal approximation, each group with its own variance.`,
-      source: "Neyman 1923, Statistical Science 5 (1990) 465-472; Imbens and Rubin 2015, chapter 6",
+      source: "Neyman 1923, Statistical Science 5 (1990) 465-472; Imbens and Rubin 2015, chapter\u00a06",
     },
     {
       when: effects.some((effect) => !("absent" in effect.contrast.relative)),
@@ -96,7 +96,7 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
       when: has("ratio-of-totals"),
       name: "Ratio of totals",
       how: "Total over total in each group; its variance from the score of each unit, numerator minus ratio times denominator, over the mean denominator.",
-      source: "Cochran 1977, chapter 6; Deng, Knoblich and Lu 2018",
+      source: "Cochran 1977, chapter\u00a06; Deng, Knoblich and Lu 2018",
     },
     {
       when: used.has("welch") || beside.has("welch"),

@@ -1,9 +1,21 @@
+import { because } from "../../decision/absent.ts";
+import { ruleInWords } from "../../decision/measure.ts";
 import type { Effect } from "../../decision/types.ts";
+import { ruleOf } from "../../decision/zones.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
-import type { ArmFigures, Contrast, Method } from "../../stats/types.ts";
-import { alike, capital, count, type Interval, number, plural, pText, signedInterval } from "../../words/index.ts";
-import { amountText, effectText, levelsText, NONE, PURPOSE, type Signed, scaleOf, zoneText } from "../effect-text.ts";
+import type { ArmFigures, Method } from "../../stats/types.ts";
+import { capital, count, type Interval, number, plural, pText } from "../../words/index.ts";
+import {
+  bareText,
+  effectText,
+  levelsText,
+  NONE,
+  PURPOSE,
+  type Signed,
+  sideBySide,
+  verdictText,
+} from "../effect-text.ts";
 import { measureText } from "../plan-words.ts";
 
 /** Section 5: one part a metric, with its arms and its effects. */
@@ -14,6 +26,8 @@ export interface MetricSection {
   readonly measure: string;
   readonly rule: string;
   readonly notes: readonly string[];
+  /** Of the differences: "percentage points", "kr", "". */
+  readonly unit: string;
   readonly armColumns: readonly string[];
   readonly arms: readonly ArmText[];
   readonly effects: readonly EffectRow[];
@@ -30,7 +44,7 @@ export interface EffectRow {
   readonly p: string;
   readonly pAdjusted: string;
   readonly method: string;
-  readonly zone: string;
+  readonly verdict: string;
   readonly beside: readonly string[];
 }
 
@@ -50,6 +64,7 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       measure: measureText(metric, plan),
       rule: ruleText(metric),
       notes: notes(metric, plan, reduction, own),
+      unit: metric.summary === "proportion" ? "percentage points" : (metric.unitOfMeasure ?? ""),
       armColumns: armColumns(metric, plan),
       arms: armRows(metric, plan, own),
       effects: own.map((effect) => effectRow(effect, metric, plan)),
@@ -61,12 +76,10 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
 function ruleText(metric: Metric): string {
   if (metric.role === "secondary")
     return "It informs and does not decide; its intervals are not widened for the number of measures looked at.";
-  const amount = metric.worthwhile ?? metric.margin;
-  if (amount === null) return "The plan asks for any gain.";
-  const size = amountText(amount, metric);
-  if (metric.role === "primary")
-    return `The plan asks for at least ${size} ${metric.goodIs === "higher" ? "more" : "less"}.`;
-  return `The plan tolerates at most ${size} ${metric.goodIs === "higher" ? "less" : "more"}.`;
+  const rule = ruleOf(metric);
+  if (rule === null) return "The plan asks for any proven gain.";
+  const words = ruleInWords(metric, rule);
+  return metric.role === "primary" ? `The plan asks for at least ${words}.` : `The plan tolerates at most ${words}.`;
 }
 
 /** What the reader must know to take the figures as they are meant. */
@@ -101,26 +114,10 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
 
 /** Why a figure does not exist, as a sentence. */
 function absentText({ contrast, control }: Effect, plan: Plan): string | null {
-  const reason = contrast.why ?? ("absent" in contrast.relative ? contrast.relative : null);
   const { one, many } = plan.unitCalled;
-  switch (reason?.absent) {
-    case undefined:
-      return null;
-    case "no-units":
-      return `There is no interval: a group has no ${one} with a value.`;
-    case "few-units":
-      return `There is no interval: a group has fewer than two ${many} with a value.`;
-    case "zero-variance":
-      return "There is no interval: no value differs from another in either group.";
-    case "control-near-zero":
-      return `Relative: not shown. The level with ${control} is not clearly above 0, so a share of it says nothing.`;
-    case "zero-denominator":
-      return "There is no ratio: a denominator adds up to 0.";
-    case "lost-digits":
-      return "There is no interval: the values are so alike for their size that no digits are left to tell them apart.";
-    case "not-built":
-      return "This version does not compute this figure.";
-  }
+  if (contrast.why !== null) return `There is no interval, since ${because(contrast.why.absent, one, many)}.`;
+  if (!("absent" in contrast.relative)) return null;
+  return `The difference relative to "${control}" is not shown, since ${because(contrast.relative.absent, one, many)}.`;
 }
 
 function armColumns(metric: Metric, plan: Plan): string[] {
@@ -144,7 +141,6 @@ function armRows(metric: Metric, plan: Plan, effects: readonly Effect[]): ArmTex
     const { levels } = levelsText(
       arms.map(({ arm }) => arm.mean),
       metric,
-      plan,
     );
     return arms.map(({ name }, i) => ({
       variant: name,
@@ -160,30 +156,29 @@ function armRows(metric: Metric, plan: Plan, effects: readonly Effect[]): ArmTex
   }));
 }
 
-function sideBySide(figures: readonly (number | null)[]): string[] {
-  const texts = alike(figures.filter((figure) => figure !== null));
-  let next = 0;
-  return figures.map((figure) => (figure === null ? NONE : (texts[next++] ?? NONE)));
-}
-
 function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
-  const { contrast } = effect;
-  const text = effectText(effect, metric, plan);
+  const { difference, relative } = effect.contrast;
+  const text = effectText(effect, plan);
   return {
     variant: effect.variant,
-    difference: text.difference,
-    relative: text.relative ?? { estimate: "not shown", interval: "" },
-    p: contrast.difference.p === null ? NONE : pText(contrast.difference.p).replace(/^p = /, ""),
-    pAdjusted: effect.pAdjusted === null ? NONE : pText(effect.pAdjusted).replace(/^p = /, ""),
-    method: METHOD[contrast.difference.method],
-    zone: metric.role === "secondary" ? PURPOSE.secondary : zoneText(effect.zone, metric),
-    beside: besideTexts(contrast, metric),
+    difference: text.bare,
+    relative: "absent" in relative ? { estimate: "not shown", interval: "" } : (text.relative ?? text.bare),
+    p: pCell(difference.p),
+    pAdjusted: pCell(effect.pAdjusted),
+    method: METHOD[difference.method],
+    verdict: verdictText(effect, plan),
+    beside: besideTexts(effect, metric),
   };
 }
 
-function besideTexts({ beside, difference }: Contrast, metric: Metric): string[] {
+function pCell(p: number | null): string {
+  return p === null ? NONE : pText(p).replace(/^p (= )?/, "");
+}
+
+function besideTexts(effect: Effect, metric: Metric): string[] {
+  const { beside, difference } = effect.contrast;
   return beside.map(({ method, low, high }) => {
     const interval: Interval = { estimate: difference.estimate ?? (low + high) / 2, low, high };
-    return `${METHOD[method]}: ${signedInterval(interval, scaleOf(metric))}`;
+    return `${METHOD[method]}: ${bareText(interval, metric, []).interval}`;
   });
 }
