@@ -1,3 +1,5 @@
+import type { Fraction } from "../cells/index.ts";
+
 /** Why a figure does not exist. The page says it in words; report.json writes null. */
 export interface Absent {
   readonly absent:
@@ -8,6 +10,17 @@ export interface Absent {
     | "zero-denominator"
     | "lost-digits"
     | "not-built";
+}
+
+/** What a contrast compares of an arm: its mean, share or ratio, and how sure that is. */
+export interface Level {
+  /** Units with a value. */
+  readonly n: number;
+  /** Exact; `value` is the double nearest to it. */
+  readonly exact: Fraction;
+  readonly value: number;
+  /** v, the variance of the level, not of the units; 0 only where all units have one value. */
+  readonly variance: number | Absent;
 }
 
 /** An arm as report.json shows it, in the metric's unit; what does not exist is null. */

@@ -1,0 +1,9 @@
+// Roll-ups
+export { arms } from "./arms.ts";
+
+// Exact quotients
+export { type Fraction, fraction, nearestNumber } from "./fraction.ts";
+export { NANO } from "./sums.ts";
+
+// Types
+export type { Arm, PowerSums } from "./types.ts";
