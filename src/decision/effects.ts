@@ -1,6 +1,6 @@
 import type { Arm } from "../cells/types.ts";
 import type { Metric, Plan, Variant } from "../plan/types.ts";
-import { contrast } from "../stats/index.ts";
+import { bonferroniP, contrast } from "../stats/index.ts";
 import type { Effect } from "./types.ts";
 import { placed } from "./zones.ts";
 
@@ -33,7 +33,7 @@ function effect(plan: Plan, metric: Metric, variant: Variant, control: Arm, trea
     variant: variant.name,
     control: controlOf(plan).name,
     contrast: found,
-    pAdjusted: decides && p !== null ? Math.min(1, variants * p) : null,
+    pAdjusted: decides && p !== null ? bonferroniP(p, variants) : null,
     ...placed(metric, found),
   };
 }

@@ -1,0 +1,128 @@
+import { describe, expect, it } from "vitest";
+import type { Arm } from "../../src/cells/types.ts";
+import { conclusion, effects } from "../../src/decision/index.ts";
+import type { Plan } from "../../src/plan/types.ts";
+import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
+
+const N = 50_000;
+
+/** The arm of a yes-or-no metric: every power of 0 and 1 is itself, so each sum is the number of successes. */
+function share(successes: number, n = N): Arm {
+  const sum = BigInt(successes) << 120n;
+  return {
+    kind: "proportion",
+    sums: {
+      n,
+      pivot: "0",
+      scale: 1,
+      powers: [sum, sum, sum, sum],
+      total: BigInt(successes) * 10n ** 9n,
+      smallest: n === 0 ? null : 0,
+      largest: n === 0 ? null : successes > 0 ? 1 : 0,
+    },
+  };
+}
+
+const PRIMARY = metricOf({ name: "Booked", role: "primary" });
+const SECONDARY = metricOf({ name: "Opened" });
+const GUARDRAIL = metricOf({ name: "Left", role: "guardrail", margin: { kind: "absolute", value: 0.01 } });
+
+function plan(names: readonly string[], metrics = [PRIMARY]): Plan {
+  return planOf({ metrics, variants: variantsOf(Object.fromEntries(names.map((name) => [name, 1]))) });
+}
+
+describe("the effects", () => {
+  // R 4.2.2, n = 50000, p = x / n, s^2 = n p (1 - p) / (n - 1): 6600 against 6000, d -+ qnorm(1 - .05 / (2 k)) se:
+  //   k = 1: 7.887059559e-03 1.611294044e-02   k = 2: 7.296466672e-03 1.670353333e-02   k = 3: 6.976287110e-03 1.702371289e-02
+  // p = 2 pnorm(-d / se) = 1.075118968e-08 whatever k; of 6100 against 6000: 0.3322259083
+  it.each([
+    [1, 7.887059559e-3, 1.611294044e-2],
+    [2, 7.296466672e-3, 1.670353333e-2],
+    [3, 6.97628711e-3, 1.702371289e-2],
+  ])("are held at alpha / %d where that many variants meet one control", (k, low, high) => {
+    const names = ["list", "calendar", "map", "tiles"].slice(0, k + 1);
+    const arms = [share(6000), ...names.slice(1).map(() => share(6600))];
+    const found = effects(plan(names, [PRIMARY, GUARDRAIL]), [arms, arms]);
+    expect(found).toHaveLength(2 * k);
+    for (const effect of found) {
+      expect(effect.contrast.difference.low).toBeCloseTo(low, 11);
+      expect(effect.contrast.difference.high).toBeCloseTo(high, 11);
+      expect((effect.contrast.difference.p ?? 0) / 1.075118968e-8).toBeCloseTo(1, 8);
+      expect((effect.pAdjusted ?? 0) / (k * 1.075118968e-8)).toBeCloseTo(1, 8);
+    }
+  });
+
+  it("are pointwise and unadjusted for a metric for information", () => {
+    const arms = [share(6000), share(6600), share(6600)];
+    for (const effect of effects(plan(["list", "calendar", "map"], [SECONDARY]), [arms])) {
+      expect(effect.contrast.difference.low).toBeCloseTo(7.887059559e-3, 11);
+      expect(effect.pAdjusted).toBeNull();
+    }
+  });
+
+  it("have an adjusted p of at most 1", () => {
+    const arms = [share(6000), share(6100), share(6100), share(6100), share(6100)];
+    const [first] = effects(plan(["list", "a", "b", "c", "d"]), [arms]);
+    expect(first?.contrast.difference.p).toBeCloseTo(0.3322259083, 9);
+    expect(first?.pAdjusted).toBe(1);
+  });
+
+  it("come metric by metric, variant by variant, in plan order and without the control", () => {
+    const three = planOf({
+      metrics: [SECONDARY, PRIMARY],
+      variants: variantsOf({ list: 1, calendar: 1, map: 1 }).map((v) => ({ ...v, isControl: v.name === "calendar" })),
+    });
+    const arms = [share(6600), share(6000), share(6100)];
+    const found = effects(three, [arms, arms]);
+    expect(found.map(({ metric, variant, control }) => [metric, variant, control])).toEqual([
+      ["Opened", "list", "calendar"],
+      ["Opened", "map", "calendar"],
+      ["Booked", "list", "calendar"],
+      ["Booked", "map", "calendar"],
+    ]);
+    expect(found[0]?.contrast.difference.estimate).toBeCloseTo(0.012, 12);
+  });
+
+  it("exist for arms that nothing can be computed from", () => {
+    const [empty] = effects(plan(["list", "calendar"]), [[share(0, 0), share(0, 0)]]);
+    expect(empty).toMatchObject({ zone: "not-settled", pAdjusted: null, eitherWay: false });
+    expect(empty?.contrast.difference).toMatchObject({ estimate: null, low: null, high: null, p: null });
+  });
+
+  it("need an arm for every metric and variant", () => {
+    expect(() => effects(plan(["list", "calendar"]), [[share(1)]])).toThrow("no arm for metric 0 and variant 1");
+  });
+});
+
+describe("several variants that pass", () => {
+  const decide = (names: readonly string[], successes: readonly number[], goodIs: "higher" | "lower" = "higher") => {
+    const several = plan(names, [{ ...PRIMARY, goodIs }]);
+    const arms = [successes.map((n) => share(n))];
+    return conclusion(several, effects(several, arms), [], reductionOf(several), arms);
+  };
+
+  it("the one with the largest estimate is adopted, with the contrast between the best two", () => {
+    const found = decide(["list", "map", "tiles", "calendar"], [6000, 6400, 6500, 6600]);
+    expect(found.variant).toBe("calendar");
+    expect(found.sentence).toBe('Adopt "calendar". "tiles" and "map" passed too; "calendar" did best on Booked.');
+    // R 4.2.2, as above: 6600 against 6500, Fieller at qnorm(.975): 0.01538461538 -0.01652473943 0.04833867767
+    expect(found.reasons.at(-1)).toBe(
+      'Between the two, Booked: 13.2 of 100 visitors with "calendar" and 13.0 with "tiles", 1.5% more (95% interval: 1.7% fewer to 4.8% more). This comparison does not decide.',
+    );
+    expect(found.reasons).toHaveLength(4);
+  });
+
+  it("the one with the smallest estimate where lower is good", () => {
+    const found = decide(["list", "map", "calendar"], [6600, 6000, 6100], "lower");
+    expect(found.variant).toBe("map");
+    expect(found.reasons.at(-1)).toContain('12.0 of 100 visitors with "map" and 12.2 with "calendar", 1.6% fewer');
+  });
+
+  it("on a tie the first in the plan", () => {
+    const found = decide(["list", "map", "calendar"], [6000, 6600, 6600]);
+    expect(found.variant).toBe("map");
+    expect(found.sentence).toBe(
+      'Adopt "map". "calendar" passed too, and no less well on Booked; "map" stands first in the plan.',
+    );
+  });
+});
