@@ -4,7 +4,7 @@ import { readFile } from "node:fs/promises";
 import path from "node:path";
 import { arms } from "./cells/index.ts";
 import { checks as soundnessChecks } from "./checks/index.ts";
-import { conclusion as concluded, effects as allEffects } from "./decision/index.ts";
+import { effects as allEffects, conclusion as concluded } from "./decision/index.ts";
 import { type Progress, type Reduction, reduce, UnusableLog } from "./engine/index.ts";
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";

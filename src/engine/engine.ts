@@ -22,7 +22,8 @@ export function whole(row: Row, column: string): bigint {
   if (typeof value === "number" && Number.isSafeInteger(value)) return BigInt(value);
   throw new Error(`column ${column} holds ${String(value)}, expected a whole number`);
 }
-export const wholeOrNull = (row: Row, column: string): bigint | null => (row[column] == null ? null : whole(row, column));
+export const wholeOrNull = (row: Row, column: string): bigint | null =>
+  row[column] == null ? null : whole(row, column);
 
 export function count(row: Row, column: string): number {
   const value = Number(whole(row, column));

@@ -90,7 +90,8 @@ export async function enginePath(file: string, workFolder: string, index: number
 }
 
 async function matches(pattern: string, folder: string): Promise<string[]> {
-  if (await isFile(path.resolve(folder, pattern))) return [slashes(path.relative(folder, path.resolve(folder, pattern)))];
+  if (await isFile(path.resolve(folder, pattern)))
+    return [slashes(path.relative(folder, path.resolve(folder, pattern)))];
   if (!isDynamicPattern(pattern)) return [];
   const absolute = path.isAbsolute(pattern);
   const base = absolute ? path.parse(folder).root : folder;

@@ -78,8 +78,7 @@ export function layout(plan: Plan): Layout {
 
 type Condition = Pick<Part, "event" | "where">;
 
-const same = (a: Condition, b: Condition) =>
-  a.event === b.event && JSON.stringify(a.where) === JSON.stringify(b.where);
+const same = (a: Condition, b: Condition) => a.event === b.event && JSON.stringify(a.where) === JSON.stringify(b.where);
 
 function distinct(conditions: readonly Condition[]): Condition[] {
   return conditions.filter((condition, i) => conditions.findIndex((other) => same(other, condition)) === i);

@@ -27,9 +27,17 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
   const fates = await engine.query(rowsByFate());
   const lines = await engine.query(unitsByLine());
   const [analysed = {}] = await engine.query(analysedRows());
-  const rowsOf = (fate: number) => sumOf(fates.filter((row) => Number(row["fate"]) === fate), "rows");
+  const rowsOf = (fate: number) =>
+    sumOf(
+      fates.filter((row) => Number(row["fate"]) === fate),
+      "rows",
+    );
   const ids = unitLineIds(plan);
-  const rowsOfLine = (id: string) => sumOf(lines.filter((row) => Number(row["line"]) === ids.indexOf(id)), "rows");
+  const rowsOfLine = (id: string) =>
+    sumOf(
+      lines.filter((row) => Number(row["line"]) === ids.indexOf(id)),
+      "rows",
+    );
 
   const rowLines = [
     { id: "rejected", rows: rowsOf(FATE.rejected) },
@@ -126,12 +134,22 @@ async function missingEvents(plan: Plan, engine: Engine): Promise<string[]> {
 
 export async function rowsPerFile(files: number, engine: Engine): Promise<number[]> {
   const rows = await engine.query(rowsByFile());
-  return Array.from({ length: files }, (_, file) => sumOf(rows.filter((row) => Number(row["file"]) === file), "rows"));
+  return Array.from({ length: files }, (_, file) =>
+    sumOf(
+      rows.filter((row) => Number(row["file"]) === file),
+      "rows",
+    ),
+  );
 }
 
 /** Counts by the plan's variants; other names are in none. */
 function byVariant(plan: Plan, rows: readonly Row[], column: string): ByVariant {
-  return plan.variants.map((_, v) => sumOf(rows.filter((row) => row["variant"] !== null && Number(row["variant"]) === v), column));
+  return plan.variants.map((_, v) =>
+    sumOf(
+      rows.filter((row) => row["variant"] !== null && Number(row["variant"]) === v),
+      column,
+    ),
+  );
 }
 
 const sumOf = (rows: readonly Row[], column: string) => rows.reduce((sum, row) => sum + count(row, column), 0);

@@ -4,8 +4,7 @@ import type { Engine } from "./engine.ts";
 import { fingerprint } from "./files.ts";
 import type { Layout } from "./layout.ts";
 import { delimitedHeader } from "./open.ts";
-import { type Statement, sql } from "./sql/index.ts";
-import { name } from "./sql/index.ts";
+import { name, type Statement, sql } from "./sql/index.ts";
 import type { InputFile } from "./types.ts";
 import { UnusableLog } from "./unusable.ts";
 
@@ -20,7 +19,7 @@ export async function readLists(plan: Plan, layout: Layout, folder: string, engi
     if (filter.kind !== "listed") continue;
     const file = path.resolve(folder, filter.listedIn);
     const delimiter = /\.tsv(\.gz|\.zst)?$/i.test(file) ? "\t" : ",";
-    const header = await delimitedHeader(file, delimiter, engine);
+    const header = (await delimitedHeader(file, delimiter, engine)).columns;
     const column = header.findIndex((cell) => unitColumns.includes(cell));
     if (column < 0 && header.length > 1) {
       throw new UnusableLog(

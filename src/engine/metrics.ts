@@ -9,19 +9,26 @@ import {
   cells,
   classes,
   countedRows,
+  type Dialect,
   decimalValue,
   doubleValue,
   extremes,
   leftOut,
   type Measured,
+  name,
+  type Statement,
   score,
   totals,
 } from "./sql/index.ts";
-import { type Dialect, name, type Statement } from "./sql/index.ts";
 import type { CellTable, MetricCells, ScoreTable } from "./types.ts";
 
 /** Stages 8 to 10: caps, pivots and scales, cells; then the ratios' scores and theirs. Reads `units` only. */
-export async function metricCells(plan: Plan, layout: Layout, engine: Engine, dialect: Dialect): Promise<MetricCells[]> {
+export async function metricCells(
+  plan: Plan,
+  layout: Layout,
+  engine: Engine,
+  dialect: Dialect,
+): Promise<MetricCells[]> {
   const raw = layout.parts.map((_, p) => name(`x${p}`));
   const caps = await Promise.all(
     layout.parts.map((part, p) => {
@@ -31,7 +38,10 @@ export async function metricCells(plan: Plan, layout: Layout, engine: Engine, di
   );
   const values = raw.map((x, p) => capped(x, caps[p] ?? null, dialect));
   const measures = await decimalMeasures(values, engine, dialect);
-  const parts = await tables(measures.map((measure) => measure.value), engine);
+  const parts = await tables(
+    measures.map((measure) => measure.value),
+    engine,
+  );
   const out = await engine.query(leftOut(raw, caps, dialect));
   const [rows = {}] = await engine.query(countedRows(plan.metrics.length));
   const scores = await scoreTables(plan, layout, values, engine, dialect);
@@ -82,7 +92,11 @@ interface DecimalMeasure {
   readonly value: Measured;
 }
 
-async function decimalMeasures(values: readonly Statement[], engine: Engine, dialect: Dialect): Promise<DecimalMeasure[]> {
+async function decimalMeasures(
+  values: readonly Statement[],
+  engine: Engine,
+  dialect: Dialect,
+): Promise<DecimalMeasure[]> {
   const rows = await engine.query(classes(values, dialect));
   return values.map((x, part) => {
     const { pivot, scale } = pivotAndScale(
@@ -140,9 +154,14 @@ async function scoreTables(
   });
   const [ends = {}] = await engine.query(extremes(scores));
   const scales = scores.map((_, i) =>
-    ends[`least${i}`] == null ? 1 : scaleOver(Math.max(Math.abs(real(ends, `least${i}`)), Math.abs(real(ends, `most${i}`)))),
+    ends[`least${i}`] == null
+      ? 1
+      : scaleOver(Math.max(Math.abs(real(ends, `least${i}`)), Math.abs(real(ends, `most${i}`)))),
   );
-  const found = await tables(scores.map((x, i) => doubleValue(x, scales[i] ?? 1)), engine);
+  const found = await tables(
+    scores.map((x, i) => doubleValue(x, scales[i] ?? 1)),
+    engine,
+  );
   return plan.metrics.map((_, m) => {
     const i = ratios.findIndex((ratio) => ratio.m === m);
     return i < 0 ? null : scoreTable(found, i, scales[i] ?? 1);
@@ -151,7 +170,11 @@ async function scoreTables(
 
 const ratioOf = (a: bigint, b: bigint): number => (b < 0n ? quotient(-a, -b) : quotient(a, b));
 
-function decimalTable(found: readonly { rows: Row[]; at: number }[], p: number, measure: DecimalMeasure | undefined): CellTable {
+function decimalTable(
+  found: readonly { rows: Row[]; at: number }[],
+  p: number,
+  measure: DecimalMeasure | undefined,
+): CellTable {
   const { rows, at } = part(found, p);
   return {
     pivot: measure?.pivot ?? "0",

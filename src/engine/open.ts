@@ -4,6 +4,7 @@ import { enginePath, type LogFile, logFiles } from "./files.ts";
 import { cells } from "./records.ts";
 import { type ColumnKind, type FileGroup, kindOf } from "./source.ts";
 import { jsonKeys, lines, parquetColumns, parquetNames } from "./sql/read.ts";
+import { firstLine, UnusableLog } from "./unusable.ts";
 
 /** A log whose files are found and whose headers are read. */
 export interface OpenLog {
@@ -18,22 +19,28 @@ interface Header {
   readonly columns: readonly string[];
   readonly engineNames: readonly string[];
   readonly kinds: readonly ColumnKind[];
+  readonly skip: number;
 }
 
 /** Finds the files of the log and reads their headers; like files form a group that one reader takes. */
-export async function openLog(source: PlanSource, folder: string, engine: Engine, workFolder: string): Promise<OpenLog> {
+export async function openLog(
+  source: PlanSource,
+  folder: string,
+  engine: Engine,
+  workFolder: string,
+): Promise<OpenLog> {
   const { files, problems } = await logFiles(source.log, folder);
   const wanted = new Set(source.mentions.map((mention) => mention.name));
   const opened: { file: LogFile; path: string; header: Header }[] = [];
   for (const [index, file] of files.entries()) {
     const path = await enginePath(file.path, workFolder, index);
-    opened.push({ file, path, header: await readHeader(file, path, wanted, engine) });
+    opened.push({ file, path, header: await headerOf(file, path, wanted, engine) });
   }
   const groups = new Map<string, FileGroup>();
   for (const [index, { file, path, header }] of opened.entries()) {
     // An empty file has no rows, and no header to miss a column in.
     if (header.columns.length === 0) continue;
-    const key = JSON.stringify([file.source, file.format, header.columns, header.kinds]);
+    const key = JSON.stringify([file.source, file.format, header]);
     const group = groups.get(key) ?? { source: file.source, format: file.format, files: [], ...header };
     groups.set(key, { ...group, files: [...group.files, { index, path }] });
   }
@@ -46,38 +53,47 @@ export async function openLog(source: PlanSource, folder: string, engine: Engine
   return { files, groups: [...groups.values()], found: { columnsBySource }, problems };
 }
 
+async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
+  try {
+    return await readHeader(file, path, wanted, engine);
+  } catch (cause) {
+    throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause)}`, { cause });
+  }
+}
+
 async function readHeader(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   switch (file.format) {
     case "csv":
-      return asText(await delimitedHeader(path, ",", engine));
+      return delimitedHeader(path, ",", engine);
     case "tsv":
-      return asText(await delimitedHeader(path, "\t", engine));
+      return delimitedHeader(path, "\t", engine);
     case "ndjson":
-      return asText(await jsonHeader(path, wanted, engine));
+      return asText(await jsonHeader(path, wanted, engine), 0);
     case "parquet":
       return parquetHeader(path, engine);
   }
 }
 
-const asText = (columns: readonly string[]): Header => ({
+const asText = (columns: readonly string[], skip: number): Header => ({
   columns,
   engineNames: columns,
   kinds: columns.map(() => "text"),
+  skip,
 });
 
 const HEADER_LINES = 50;
 
 /** The cells of the first record, which a quoted name may spread over several lines. */
-export async function delimitedHeader(path: string, delimiter: string, engine: Engine): Promise<string[]> {
+export async function delimitedHeader(path: string, delimiter: string, engine: Engine): Promise<Header> {
   const rows = await engine.query(lines(path, HEADER_LINES));
   const texts = rows.map((row) => textOrNull(row, "line") ?? "");
   const start = texts.findIndex((line) => line !== "");
-  if (start < 0) return [];
+  if (start < 0) return asText([], 0);
   for (let end = start + 1; end <= texts.length; end++) {
     const header = cells(texts.slice(start, end).join("\n"), delimiter);
-    if (header !== null) return header;
+    if (header !== null) return asText(header, start);
   }
-  return [];
+  return asText([], 0);
 }
 
 const SAMPLE_LINES = 2_000;
@@ -97,6 +113,7 @@ async function parquetHeader(path: string, engine: Engine): Promise<Header> {
     columns: topLevel(named.map((row) => ({ name: text(row, "name"), children: Number(row["num_children"] ?? 0n) }))),
     engineNames: described.map((row) => text(row, "column_name")),
     kinds: described.map((row) => kindOf(text(row, "column_type"))),
+    skip: 0,
   };
 }
 

@@ -1,22 +1,17 @@
 import { mkdtemp, rm } from "node:fs/promises";
 import os from "node:os";
 import path from "node:path";
-import {
-  logProblems,
-  noSuchList,
-  type Plan,
-  type PlanSource,
-  type Problem,
-} from "../plan/index.ts";
+import { logProblems, noSuchList, type Plan, type PlanSource, type Problem } from "../plan/index.ts";
 import { openDuckdb } from "./duckdb.ts";
 import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
-import { fingerprint, isFile, neighbours } from "./files.ts";
-import { FATE, type Layout, layout as layoutOf } from "./layout.ts";
+import { isFile, neighbours } from "./files.ts";
+import { type Layout, layout as layoutOf } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { readLists } from "./lists.ts";
 import { logEnd } from "./logEnd.ts";
 import { metricCells } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
+import { inputFingerprints, readRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import {
   atEnrolment,
@@ -26,16 +21,12 @@ import {
   enrolmentKey,
   enrolments,
   markDuplicates,
-  rows,
   seen,
-  sql,
   timeBins,
   timeRange,
   units,
-  unreadableRows,
 } from "./sql/index.ts";
 import type { Reduction } from "./types.ts";
-import { UnusableLog } from "./unusable.ts";
 import { dayRuns, offsetsByLocalTime } from "./zone.ts";
 
 export interface ReduceOptions {
@@ -73,7 +64,7 @@ export async function reduce(
     const log = await openLog(source, folder, engine, workFolder);
     const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
     if (planned === null || problems.length > 0) return { problems };
-    return { reduction: await stages(planned, folder, log, engine, duckdb, options) };
+    return { reduction: await stages(planned, folder, workFolder, log, engine, duckdb, options) };
   } finally {
     options.signal?.removeEventListener("abort", stop);
     engine.close();
@@ -84,6 +75,7 @@ export async function reduce(
 async function stages(
   plan: Plan,
   folder: string,
+  workFolder: string,
   log: OpenLog,
   engine: Engine,
   dialect: Dialect,
@@ -96,10 +88,11 @@ async function stages(
     options.progress?.({ stage: name, rows: rowsRead, share });
   };
   stage("reading the log", 0);
-  const fingerprints = Promise.all(log.files.map((file) => fingerprint(file.path)));
+  const fingerprints = inputFingerprints(log);
   // A failure is met where it is awaited; until then it must not count as unhandled.
   fingerprints.catch(() => undefined);
-  await readRows(plan, layout, log, engine, dialect);
+  const zone = offsetsByLocalTime(plan.timezone);
+  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect);
   const perFile = await rowsPerFile(log.files.length, engine);
   rowsRead = perFile.reduce((sum, n) => sum + n, 0);
   const lists = await readLists(plan, layout, folder, engine);
@@ -125,7 +118,9 @@ async function stages(
   const metrics = await metricCells(plan, layout, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
-  if (options.rejectsTo !== undefined) await writeRejects(options.rejectsTo, layout, log.files, engine);
+  if (options.rejectsTo !== undefined) {
+    await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
+  }
   const prints = await fingerprints;
   stage("done", 1);
   return {
@@ -141,36 +136,6 @@ async function stages(
     facts: found,
     metrics,
   };
-}
-
-async function readRows(plan: Plan, layout: Layout, log: OpenLog, engine: Engine, dialect: Dialect): Promise<void> {
-  const zone = offsetsByLocalTime(plan.timezone);
-  for (const [i, group] of log.groups.entries()) {
-    const names = group.files.map((file) => log.files[file.index]?.name).join(", ");
-    try {
-      await engine.run(rows(plan, layout, group, i === 0 ? "create" : "insert", zone, dialect));
-    } catch (cause) {
-      throw new UnusableLog(`The engine could not read ${names}: ${firstLine(cause)}`, { cause });
-    }
-    if (group.format !== "parquet") {
-      await engine.run(unreadableRows(group));
-      await engine.run(sql`DROP TABLE reject_errors`);
-      await engine.run(sql`DROP TABLE reject_scans`);
-    }
-  }
-  const isReadable =
-    log.groups.length > 0 &&
-    (await engine.query(sql`SELECT count(*) AS rows FROM rows WHERE fate <> ${FATE.rejected}`)).some(
-      (row) => count(row, "rows") > 0,
-    );
-  if (!isReadable) {
-    const rejected = log.groups.length === 0 ? 0 : (await rowsPerFile(log.files.length, engine)).reduce((a, b) => a + b, 0);
-    throw new UnusableLog(
-      rejected === 0
-        ? "The log has no rows: its files are empty or hold only a header. Look at the paths in the plan's log."
-        : `None of the log's ${rejected} rows could be read. Look at the columns and the time format that the plan names.`,
-    );
-  }
 }
 
 async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {
@@ -194,5 +159,3 @@ async function missingLists(source: PlanSource, folder: string): Promise<Problem
   );
   return problems.flat();
 }
-
-const firstLine = (cause: unknown) => (cause instanceof Error ? (cause.message.split("\n")[0] ?? "") : String(cause));

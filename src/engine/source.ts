@@ -1,7 +1,16 @@
 import type { LogFile } from "./files.ts";
 
 /** How a column arrives from the reader. Text is VARCHAR with missing as NULL or ''. */
-export type ColumnKind = "text" | "whole" | "decimal" | "float" | "boolean" | "timestamp" | "instant" | "date" | "other";
+export type ColumnKind =
+  | "text"
+  | "whole"
+  | "decimal"
+  | "float"
+  | "boolean"
+  | "timestamp"
+  | "instant"
+  | "date"
+  | "other";
 
 /** Files of one entry of `log` that one reader can take together: same format, same header, same types. */
 export interface FileGroup {
@@ -13,6 +22,8 @@ export interface FileGroup {
   /** The engine's own names (Parquet: made unique where two differ in case only). */
   readonly engineNames: readonly string[];
   readonly kinds: readonly ColumnKind[];
+  /** Blank lines before the header. */
+  readonly skip: number;
 }
 
 /** The engine's type name to the way its values are read. */

@@ -18,7 +18,10 @@ export interface ReportFolder {
 }
 
 /** Opens out, or out/<experiment> in the current folder. A folder with another experiment's report is refused. */
-export async function openFolder(experiment: string, out?: string): Promise<ReportFolder | { readonly refused: string }> {
+export async function openFolder(
+  experiment: string,
+  out?: string,
+): Promise<ReportFolder | { readonly refused: string }> {
   const shown = out ?? path.join("out", folderName(experiment));
   const folder = path.resolve(shown);
   const other = await experimentIn(folder);

@@ -24,7 +24,11 @@ export function decimalValue(x: Statement, pivot: string, scale: number, dialect
   return { u: sql`(${dialect.toDouble(difference)}) / ${double(scale)}`, x, isDecimal: true };
 }
 
-export const doubleValue = (x: Statement, scale: number): Measured => ({ u: sql`${x} / ${double(scale)}`, x, isDecimal: false });
+export const doubleValue = (x: Statement, scale: number): Measured => ({
+  u: sql`${x} / ${double(scale)}`,
+  x,
+  isDecimal: false,
+});
 
 /**
  * Reads   units
@@ -35,13 +39,8 @@ export function cells(values: readonly Measured[]): Statement {
   const us = values.flatMap((value, i) => [sql`${value.u} AS ${name(`u${i}`)}`, sql`${value.x} AS ${name(`x${i}`)}`]);
   const terms = values.flatMap((_, i) => {
     const u = name(`u${i}`);
-    const powers = ORDERS.map((k) =>
-      product(Array.from({ length: k }, () => u)),
-    );
-    return [
-      name(`x${i}`),
-      ...ORDERS.map((k) => sql`${powers[k - 1] ?? u} * ${TWO_60} AS ${name(`t${i}_${k}`)}`),
-    ];
+    const powers = ORDERS.map((k) => product(Array.from({ length: k }, () => u)));
+    return [name(`x${i}`), ...ORDERS.map((k) => sql`${powers[k - 1] ?? u} * ${TWO_60} AS ${name(`t${i}_${k}`)}`)];
   });
   const sums = values.flatMap((value, i) => [
     sql`count(${name(`x${i}`)}) AS ${name(`n${i}`)}`,
@@ -97,7 +96,9 @@ export function totals(values: readonly Statement[]): Statement {
 
 /** A value held down to a cap; NULL stays NULL (least() would make it the cap). */
 export const capped = (x: Statement, cap: string | null, dialect: Dialect): Statement =>
-  cap === null ? x : sql`CASE WHEN ${x} > CAST(${cap} AS ${dialect.sumType}) THEN CAST(${cap} AS ${dialect.sumType}) ELSE ${x} END`;
+  cap === null
+    ? x
+    : sql`CASE WHEN ${x} > CAST(${cap} AS ${dialect.sumType}) THEN CAST(${cap} AS ${dialect.sumType}) ELSE ${x} END`;
 
 /** The value at a rank, from the nearer end. */
 export function atRank(x: Statement, rank: bigint, n: bigint): Statement {
@@ -139,7 +140,10 @@ export function score(
 
 /** Smallest and largest of some doubles over all units, to find their scales. */
 export function extremes(values: readonly Statement[]): Statement {
-  const ends = values.flatMap((x, i) => [sql`min(${x}) AS ${name(`least${i}`)}`, sql`max(${x}) AS ${name(`most${i}`)}`]);
+  const ends = values.flatMap((x, i) => [
+    sql`min(${x}) AS ${name(`least${i}`)}`,
+    sql`max(${x}) AS ${name(`most${i}`)}`,
+  ]);
   return sql`SELECT ${list(ends)} FROM units`;
 }
 

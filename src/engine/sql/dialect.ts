@@ -111,6 +111,10 @@ export function localDay(atUs: Statement, table: readonly Step<DayRun>[]): State
 }
 
 /** A list of values, for IN. */
-export const valueList = (values: readonly string[]): Statement => join(values.map((value) => sql`${value}`), ", ");
+export const valueList = (values: readonly string[]): Statement =>
+  join(
+    values.map((value) => sql`${value}`),
+    ", ",
+  );
 
 export { double };

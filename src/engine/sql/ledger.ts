@@ -60,5 +60,17 @@ export const eventsThatOccur = (events: Statement): Statement => sql`
 /** Counted rows of each metric, and those of them without a number. */
 export function countedRows(metrics: number): Statement {
   const sums = Array.from({ length: metrics }, (_, m) => [`counted${m}`, `numberless${m}`]).flat();
-  return sql`SELECT ${join(sums.map((column) => sql`coalesce(sum(${name(column)}), 0) AS ${name(column)}`), ", ")} FROM units`;
+  return sql`SELECT ${join(
+    sums.map((column) => sql`coalesce(sum(${name(column)}), 0) AS ${name(column)}`),
+    ", ",
+  )} FROM units`;
 }
+
+/** Files with rejected rows: how many in all, and how many of them the reader could not cut into cells. */
+export const rejectsByFile = (unreadable: number): Statement => sql`
+  SELECT file, count(*) AS rows, count(*) FILTER (WHERE reason = ${unreadable}) AS unreadable
+  FROM rows WHERE fate = ${FATE.rejected} GROUP BY file ORDER BY file`;
+
+/** Rejected rows of a file as the first reading has them. */
+export const rejectedTexts = (file: number): Statement => sql`
+  SELECT reason, text FROM rows WHERE fate = ${FATE.rejected} AND file = ${file} ORDER BY reason, text`;

@@ -6,6 +6,8 @@ import { join, name, type Statement, sql } from "./sql.ts";
  * Readers: one SELECT a group of like files.
  * Writes  file (index into the inputs), readable, and c0.. for the wanted columns in their order, NULL where the group
  *         lacks one. A record that the reader cannot cut into cells does not come out here: it is in reject_errors.
+ *         Numbered, of one file: also ordinal (csv, tsv: among the readable rows; ndjson: the line; Parquet: the row) and
+ *         raw, the row's text where the reader has it.
  */
 
 /** Delimiter of a reader that is to give whole lines: JSON text holds no control character. */
@@ -14,16 +16,16 @@ const NO_DELIMITER = "\u0001";
 const IS_OBJECT = sql`CASE WHEN json_valid(line) THEN json_type(line) = 'OBJECT' ELSE FALSE END`;
 const LONGEST_LINE = 32 * 1024 * 1024;
 
-export function read(group: FileGroup, wanted: readonly string[]): Statement {
+export function read(group: FileGroup, wanted: readonly string[], isNumbered = false): Statement {
   switch (group.format) {
     case "csv":
-      return readDelimited(group, wanted, ",");
+      return readDelimited(group, wanted, ",", isNumbered);
     case "tsv":
-      return readDelimited(group, wanted, "\t");
+      return readDelimited(group, wanted, "\t", isNumbered);
     case "ndjson":
-      return readJson(group, wanted);
+      return readJson(group, wanted, isNumbered);
     case "parquet":
-      return readParquet(group, wanted);
+      return readParquet(group, wanted, isNumbered);
   }
 }
 
@@ -35,7 +37,7 @@ export function kindsOf(group: FileGroup, wanted: readonly string[]): ColumnKind
 /** The lines of a file as they stand, whatever its compression; `limit` 0 for all. */
 export function lines(path: string, limit: number): Statement {
   const some = limit === 0 ? sql`` : sql`LIMIT ${limit}`;
-  return sql`SELECT line FROM ${lineReader([path])} ${some}`;
+  return sql`SELECT line FROM ${lineReader([path], sql`ignore_errors = true`)} ${some}`;
 }
 
 /** Keys of the JSON objects in some files; the first `limit` lines, 0 for all. */
@@ -43,7 +45,7 @@ export function jsonKeys(paths: readonly string[], limit: number): Statement {
   const some = limit === 0 ? sql`` : sql`LIMIT ${limit}`;
   return sql`
     SELECT DISTINCT unnest(CASE WHEN ${IS_OBJECT} THEN json_keys(line) END) AS key
-    FROM (SELECT line FROM ${lineReader(paths)} ${some})`;
+    FROM (SELECT line FROM ${lineReader(paths, sql`ignore_errors = true`)} ${some})`;
 }
 
 export const parquetColumns = (path: string): Statement => sql`DESCRIBE SELECT * FROM read_parquet(${path})`;
@@ -51,7 +53,7 @@ export const parquetColumns = (path: string): Statement => sql`DESCRIBE SELECT *
 /** Top-level names as the file has them: the engine's own differ where two are alike but for case. */
 export const parquetNames = (path: string): Statement => sql`SELECT name, num_children FROM parquet_schema(${path})`;
 
-function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: string): Statement {
+function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: string, isNumbered: boolean): Statement {
   // All columns as text, by position: no detection, and names that differ in case only stay apart.
   const columns = group.columns.map((_, i) => sql`${`c${i}`}: 'VARCHAR'`);
   const picked = wanted.map((column, i) => {
@@ -59,21 +61,25 @@ function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: s
     return at < 0 ? sql`CAST(NULL AS VARCHAR) AS ${name(`c${i}`)}` : sql`r.${name(`c${at}`)} AS ${name(`c${i}`)}`;
   });
   return sql`
-    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...picked])}
+    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...numbered(isNumbered, sql`row_number() OVER ()`), ...picked])}
     FROM read_csv(${paths(group)}, auto_detect = false, header = true, columns = {${join(columns, ", ")}},
       delim = ${delimiter}, quote = '"', escape = '"', nullstr = '', strict_mode = true, store_rejects = true,
-      max_line_size = ${LONGEST_LINE}) AS r`;
+      max_line_size = ${LONGEST_LINE}, skip = ${group.skip}) AS r`;
 }
 
-function readJson(group: FileGroup, wanted: readonly string[]): Statement {
+function readJson(group: FileGroup, wanted: readonly string[], isNumbered: boolean): Statement {
+  const number = isNumbered ? [sql`ordinal`, sql`raw`] : [];
   const picked = wanted.map((column, i) => sql`${jsonText(column)} AS ${name(`c${i}`)}`);
   return sql`
-    SELECT ${comma([sql`file`, sql`readable`, ...picked])}
+    SELECT ${comma([sql`file`, sql`readable`, ...number, ...picked])}
     FROM (
-      SELECT file, ${IS_OBJECT} AS readable, CASE WHEN ${IS_OBJECT} THEN line END AS line
+      SELECT ${comma([sql`file`, sql`${IS_OBJECT} AS readable`, sql`CASE WHEN ${IS_OBJECT} THEN line END AS line`, ...number])}
       FROM (
-        SELECT ${comma([fileIndex(group), sql`line`])}
-        FROM ${lineReader(group.files.map((file) => file.path))} AS r
+        SELECT ${comma([fileIndex(group), sql`line`, ...(isNumbered ? [sql`row_number() OVER () AS ordinal`, sql`line AS raw`] : [])])}
+        FROM ${lineReader(
+          group.files.map((file) => file.path),
+          sql`store_rejects = true`,
+        )} AS r
       )
       WHERE trim(line) <> ''
     )`;
@@ -94,7 +100,7 @@ function jsonText(column: string): Statement {
     THEN ${cut} ELSE ${plain} END`;
 }
 
-function readParquet(group: FileGroup, wanted: readonly string[]): Statement {
+function readParquet(group: FileGroup, wanted: readonly string[], isNumbered: boolean): Statement {
   const picked = wanted.map((column, i) => {
     const engineName = group.engineNames[group.columns.indexOf(column)];
     return engineName === undefined
@@ -102,14 +108,20 @@ function readParquet(group: FileGroup, wanted: readonly string[]): Statement {
       : sql`r.${name(engineName)} AS ${name(`c${i}`)}`;
   });
   return sql`
-    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...picked])}
+    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...numbered(isNumbered, sql`r.file_row_number + 1`), ...picked])}
     FROM read_parquet(${paths(group)}) AS r`;
 }
 
-function lineReader(files: readonly string[]): Statement {
-  return sql`read_csv([${join(files.map((file) => sql`${file}`), ", ")}], auto_detect = false, header = false,
+const numbered = (isNumbered: boolean, ordinal: Statement): Statement[] =>
+  isNumbered ? [sql`${ordinal} AS ordinal`, sql`CAST(NULL AS VARCHAR) AS raw`] : [];
+
+function lineReader(files: readonly string[], errors: Statement): Statement {
+  return sql`read_csv([${join(
+    files.map((file) => sql`${file}`),
+    ", ",
+  )}], auto_detect = false, header = false,
     columns = {line: 'VARCHAR'}, delim = ${NO_DELIMITER}, quote = '', escape = '', nullstr = '',
-    strict_mode = false, max_line_size = ${LONGEST_LINE}, store_rejects = true)`;
+    strict_mode = false, max_line_size = ${LONGEST_LINE}, ${errors})`;
 }
 
 function fileIndex(group: FileGroup): Statement {
@@ -119,7 +131,11 @@ function fileIndex(group: FileGroup): Statement {
   return sql`CAST([${join(indexes, ", ")}][CAST(r.file_index AS BIGINT) + 1] AS INTEGER) AS file`;
 }
 
-const paths = (group: FileGroup) => sql`[${join(group.files.map((file) => sql`${file.path}`), ", ")}]`;
+const paths = (group: FileGroup) =>
+  sql`[${join(
+    group.files.map((file) => sql`${file.path}`),
+    ", ",
+  )}]`;
 const comma = (items: readonly Statement[]) => join(items, ", ");
 const escapeRegExp = (text: string) => text.replace(/[\\^$.*+?()[\]{}|]/g, "\\$&");
 
@@ -143,14 +159,24 @@ export function asValue(column: Statement, kind: ColumnKind, dialect: Dialect): 
 }
 
 /** Clock time and stated offset, both in microseconds; an offset of NULL means the plan's zone. */
-export function asTime(column: Statement, kind: ColumnKind, dialect: Dialect): { clockUs: Statement; offsetUs: Statement } {
+export function asTime(
+  column: Statement,
+  kind: ColumnKind,
+  dialect: Dialect,
+): { clockUs: Statement; offsetUs: Statement } {
   switch (kind) {
     case "instant":
-      return { clockUs: sql`CASE WHEN isfinite(${column}) THEN epoch_us(${column}) END`, offsetUs: sql`CAST(0 AS BIGINT)` };
+      return {
+        clockUs: sql`CASE WHEN isfinite(${column}) THEN epoch_us(${column}) END`,
+        offsetUs: sql`CAST(0 AS BIGINT)`,
+      };
     case "timestamp":
     case "date": {
       const plain = sql`CAST(${column} AS TIMESTAMP)`;
-      return { clockUs: sql`CASE WHEN isfinite(${plain}) THEN epoch_us(${plain}) END`, offsetUs: sql`CAST(NULL AS BIGINT)` };
+      return {
+        clockUs: sql`CASE WHEN isfinite(${plain}) THEN epoch_us(${plain}) END`,
+        offsetUs: sql`CAST(NULL AS BIGINT)`,
+      };
     }
     default: {
       const text = asText(column, kind);

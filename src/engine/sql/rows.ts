@@ -46,12 +46,41 @@ export function rows(
       CAST(reason AS SMALLINT) AS reason,
       CAST(CASE WHEN NOT ${isKept} THEN ${FATE.rejected} ${join(filters, "\n")} ELSE ${FATE.seen} END AS SMALLINT) AS fate,
       CASE WHEN NOT ${isKept} THEN concat_ws(', ', ${list(rejectedText(layout))}) END AS text
+    FROM (${judgedRows(plan, layout, group, zone, dialect, false)})`;
+}
+
+/**
+ * The rejected rows of one file, found by a second reading, for rejects.csv.
+ * Gives   ordinal, reason, text, in the order of the file
+ */
+export function rejectedOrdinals(
+  plan: Plan,
+  layout: Layout,
+  group: FileGroup,
+  zone: readonly Step<bigint>[],
+  dialect: Dialect,
+): Statement {
+  return sql`
+    SELECT ordinal, reason, coalesce(raw, concat_ws(', ', ${list(rejectedText(layout))})) AS text
+    FROM (${judgedRows(plan, layout, group, zone, dialect, true)})
+    WHERE reason <> ${REASON.none}
+    ORDER BY ordinal`;
+}
+
+/** Typed rows with at_us and the reason of their rejection. */
+function judgedRows(
+  plan: Plan,
+  layout: Layout,
+  group: FileGroup,
+  zone: readonly Step<bigint>[],
+  dialect: Dialect,
+  isNumbered: boolean,
+): Statement {
+  return sql`
+    SELECT *, ${reason(layout, dialect)} AS reason
     FROM (
-      SELECT *, ${reason(layout, dialect)} AS reason
-      FROM (
-        SELECT * EXCLUDE (clock_us, offset_us), clock_us - coalesce(offset_us, ${localOffset(sql`clock_us`, zone)}) AS at_us
-        FROM (${typedRows(plan, layout, group, dialect)})
-      )
+      SELECT * EXCLUDE (clock_us, offset_us), clock_us - coalesce(offset_us, ${localOffset(sql`clock_us`, zone)}) AS at_us
+      FROM (${typedRows(plan, layout, group, dialect, isNumbered)})
     )`;
 }
 
@@ -63,7 +92,7 @@ export function storedColumns(layout: Layout): Statement[] {
 export const stored = (layout: Layout, c: number): Statement =>
   layout.numeric[c] === true ? name(`v${c}`) : name(`x${c}`);
 
-function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialect): Statement {
+function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialect, isNumbered: boolean): Statement {
   const roles = plan.log[group.source]?.columns;
   if (roles === undefined) throw new Error(`no entry ${group.source} of the log`);
   const wanted = [
@@ -81,16 +110,14 @@ function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialec
       : asTime(raw(roles.time), kind(roles.time), dialect);
   const columns = layout.columns.flatMap((column, c) => [
     sql`${text(column)} AS ${name(`x${c}`)}`,
-    ...(layout.numeric[c] === true
-      ? [sql`${asValue(raw(column), kind(column), dialect)} AS ${name(`v${c}`)}`]
-      : []),
+    ...(layout.numeric[c] === true ? [sql`${asValue(raw(column), kind(column), dialect)} AS ${name(`v${c}`)}`] : []),
   ]);
   return sql`
     SELECT file, CAST(${group.source} AS SMALLINT) AS source, readable, ${text(roles.unit)} AS unit,
       ${time.clockUs} AS clock_us, ${time.offsetUs} AS offset_us, ${text(roles.time)} AS time_text,
       ${text(roles.event)} AS event, ${text(roles.eventId)} AS event_id,
-      ${list([sql`${text(roles.variant)} AS variant`, ...columns])}
-    FROM (${read(group, wanted)})`;
+      ${list([sql`${text(roles.variant)} AS variant`, ...(isNumbered ? [sql`ordinal`, sql`raw`] : []), ...columns])}
+    FROM (${read(group, wanted, isNumbered)})`;
 }
 
 function reason(layout: Layout, dialect: Dialect): Statement {

@@ -8,7 +8,13 @@ import { join, name, type Statement, sql } from "./sql.ts";
  * Gives   source, bin, rows, first_us, last_us, counted (whether some metric's condition holds for a row of it)
  */
 export function timeBins(layout: Layout): Statement {
-  const any = layout.matches.length === 0 ? sql`FALSE` : join(layout.matches.map((_, i) => name(`m${i}`)), " OR ");
+  const any =
+    layout.matches.length === 0
+      ? sql`FALSE`
+      : join(
+          layout.matches.map((_, i) => name(`m${i}`)),
+          " OR ",
+        );
   return sql`
     SELECT source, at_us // 86400000000 AS bin, count(*) AS rows, min(at_us) AS first_us, max(at_us) AS last_us,
       bool_or(${any}) AS counted

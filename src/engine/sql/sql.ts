@@ -22,7 +22,10 @@ export function name(identifier: string): Statement {
 }
 
 /** Statements joined by a separator; an empty list is an empty statement. */
-export function join(items: readonly Statement[], separator: " AND " | " OR " | ", " | "\n" | "\nUNION ALL\n"): Statement {
+export function join(
+  items: readonly Statement[],
+  separator: " AND " | " OR " | ", " | "\n" | "\nUNION ALL\n",
+): Statement {
   return { text: items.map((item) => item.text).join(separator) };
 }
 

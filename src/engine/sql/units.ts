@@ -13,18 +13,10 @@ import { join, name, type Statement, sql } from "./sql.ts";
  * Every analysed unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
  * rowid: a number, where the id is text.
  */
-export function units(
-  plan: Plan,
-  layout: Layout,
-  days: readonly Step<DayRun>[],
-  dialect: Dialect,
-): Statement {
+export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
   const analysed = unitLineIds(plan).length - 1;
-  const end =
-    plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
-  const place = layout.hasTime
-    ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END`
-    : sql`0`;
+  const end = plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
+  const place = layout.hasTime ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END` : sql`0`;
   const aggregates = layout.parts.flatMap((part, p) => [
     sql`${aggregate(part, days, dialect)} AS ${name(`s${p}`)}`,
     sql`count(*) FILTER (WHERE ${counted(part)}) AS ${name(`r${p}`)}`,
@@ -35,7 +27,10 @@ export function units(
       part.value === null ? [] : [sql`(${counted(part)} AND ${name(`v${part.value}`)} IS NULL)`],
     );
     return [
-      sql`count(*) FILTER (WHERE ${join(parts.map((part) => sql`(${counted(part)})`), " OR ")}) AS ${name(`counted${m}`)}`,
+      sql`count(*) FILTER (WHERE ${join(
+        parts.map((part) => sql`(${counted(part)})`),
+        " OR ",
+      )}) AS ${name(`counted${m}`)}`,
       numberless.length === 0
         ? sql`0 AS ${name(`numberless${m}`)}`
         : sql`count(*) FILTER (WHERE ${join(numberless, " OR ")}) AS ${name(`numberless${m}`)}`,

@@ -16,7 +16,12 @@ export function where(tests: Where, column: Columns, dialect: Dialect): Statemen
 }
 
 /** A part's rows: its event, and its where. */
-export function matches(part: Pick<Part, "event" | "where">, event: Statement, column: Columns, dialect: Dialect): Statement {
+export function matches(
+  part: Pick<Part, "event" | "where">,
+  event: Statement,
+  column: Columns,
+  dialect: Dialect,
+): Statement {
   const rest = where(part.where, column, dialect);
   return part.event === null ? sql`(${rest})` : sql`(coalesce(${event} = ${part.event}, FALSE) AND ${rest})`;
 }
@@ -72,5 +77,8 @@ function compared(text: Statement, operator: Statement, value: string, dialect: 
 
 /** `*` any run of characters, `?` one: the plan's pattern as LIKE has it. */
 function like(pattern: string): string {
-  return pattern.replace(/[\\%_]/g, "\\$&").replaceAll("*", "%").replaceAll("?", "_");
+  return pattern
+    .replace(/[\\%_]/g, "\\$&")
+    .replaceAll("*", "%")
+    .replaceAll("?", "_");
 }
