@@ -18,7 +18,6 @@ export function columnMentions(yaml: YamlText): readonly Mention[] {
   const mentions: Mention[] = [];
   const visit = (node: unknown, path: Path): void => {
     const target = isAlias(node) ? node.resolve(yaml.document) : node;
-    if (path.length > DEEPEST) return;
     if (isSeq(target)) target.items.forEach((item, i) => void visit(item, [...path, i]));
     if (isMap(target)) {
       for (const pair of target.items) {
@@ -38,7 +37,6 @@ export function columnMentions(yaml: YamlText): readonly Mention[] {
   visit(yaml.document.contents, []);
   return mentions;
 }
-const DEEPEST = 12; // a column stands at most 5 deep; an alias could lead round in a circle
 
 /** The columns other than time, event and variant, each once, in the order of first mention (DESIGN 4, rule 3). */
 export function orderedColumns(mentions: readonly Mention[]): {

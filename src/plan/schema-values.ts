@@ -88,10 +88,10 @@ const condition = z
       .strictObject({
         not: values.meta({ description: "Matches what is there and is none of these." }).optional(),
         in: values.meta({ description: "Matches any of these." }).optional(),
-        above: z.number().optional(),
-        below: z.number().optional(),
-        "at-least": z.number().optional(),
-        "at-most": z.number().optional(),
+        above: z.number().meta({ description: "Numbers above this." }).optional(),
+        below: z.number().meta({ description: "Numbers below this." }).optional(),
+        "at-least": z.number().meta({ description: "Numbers of this or more." }).optional(),
+        "at-most": z.number().meta({ description: "Numbers of this or less." }).optional(),
         missing: z.boolean().meta({ description: "true matches empty cells, false all others." }).optional(),
         matches: z
           .union([z.string(), z.array(z.string()).min(1)])

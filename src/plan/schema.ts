@@ -132,6 +132,7 @@ export const planSchema = z
           .meta({ description: "A unit seen in two variants counts where it was first enrolled, or not at all." })
           .default("first"),
       })
+      .meta({ description: "Who enters the experiment, and when." })
       .prefault({}),
     variants: z.array(variant).min(2).meta({ description: "Two or more, exactly one the control." }),
     ended: text("Why the experiment ended.").optional(),
@@ -143,10 +144,14 @@ export const planSchema = z
           .meta({ description: "Units not followed to the end are left out, or kept." })
           .default("exclude"),
       })
+      .meta({ description: "How long after its enrolment a unit counts." })
       .optional(),
     metrics: z.array(metric).min(1).meta({ description: "At least one primary." }),
     filters: z.array(filter).meta({ description: "Units or rows that do not count, in this order." }).default([]),
-    subgroups: z.array(text("A column of the log.")).optional(),
+    subgroups: z
+      .array(text("A column of the log."))
+      .meta({ description: "Columns whose value at enrolment divides the units." })
+      .optional(),
     decision: z
       .strictObject({
         confidence: shareBetween0And1("The confidence of the intervals.").default(0.95),
@@ -161,6 +166,7 @@ export const planSchema = z
           .meta({ description: "Which interval decides." })
           .default("normal"),
       })
+      .meta({ description: "The rule that the conclusion applies." })
       .prefault({}),
     planned: z
       .strictObject({

@@ -1,4 +1,4 @@
-import type { YAMLError } from "yaml";
+import { type Document, isAlias, isCollection, isPair, type YAMLError } from "yaml";
 import type { Problem } from "./types.ts";
 
 /** What keeps a text from being YAML, in our words: the parser's own speak of indicators and implicit keys. */
@@ -23,6 +23,26 @@ export function nestedTooDeep(text: string): Problem | null {
   return null;
 }
 const DEEPEST = 50;
+
+/** An alias that leads back to itself, or with which a few lines stand for millions. */
+export function endlessAlias(document: Document.Parsed): Problem | null {
+  const sizes = new Map<unknown, number>(); // infinite while a node is being counted: it is met again inside itself
+  const size = (node: unknown): number => {
+    const target = isAlias(node) ? node.resolve(document) : node;
+    const known = sizes.get(target);
+    if (known !== undefined) return known;
+    sizes.set(target, Number.POSITIVE_INFINITY);
+    const inside: readonly unknown[] = isCollection(target) ? target.items : isPair(target) ? [target.value] : [];
+    const sum = inside.reduce<number>((total, item) => total + size(item), 1);
+    sizes.set(target, sum);
+    return sum;
+  };
+  if (size(document.contents) <= MOST_NODES) return null;
+  const message =
+    "The aliases of this plan lead back to themselves, or stand for far more than a plan holds. Write them out.";
+  return { path: [], at: "key", message };
+}
+const MOST_NODES = 20_000; // a plan has hundreds
 
 function yamlProblem(fault: YAMLError, text: string): Problem {
   const words = WORDS.find(([code, pattern]) => code === fault.code && pattern.test(fault.message));

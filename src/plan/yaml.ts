@@ -13,7 +13,7 @@ import {
 } from "yaml";
 import { parseYamlNumber } from "./number.ts";
 import type { DecimalText, Problem } from "./types.ts";
-import { nestedTooDeep, yamlProblems } from "./yaml-faults.ts";
+import { endlessAlias, nestedTooDeep, yamlProblems } from "./yaml-faults.ts";
 
 /** The plan's text, its YAML tree and its lines: what is needed to say where something stands. */
 export interface YamlText {
@@ -35,36 +35,24 @@ export function readYaml(fileText: string): { yaml: YamlText; problems: readonly
     lineCounter: lines,
     prettyErrors: false,
   });
+  const endless = tooDeep ?? endlessAlias(document);
   return {
     yaml: { text, document, lines },
-    problems: tooDeep === null ? yamlProblems([...document.errors, ...document.warnings], text) : [tooDeep],
-    isBroken: tooDeep !== null || document.errors.some((fault) => fault.code !== "DUPLICATE_KEY"),
+    problems: endless === null ? yamlProblems([...document.errors, ...document.warnings], text) : [endless],
+    isBroken: endless !== null || document.errors.some((fault) => fault.code !== "DUPLICATE_KEY"),
   };
 }
 
 /** The tree as plain data. Keys are the text they are written in (`0123:` is "0123"); of two equal keys the first counts. */
 export function plainData(yaml: YamlText): { value: unknown; problems: readonly Problem[] } {
   const problems: Problem[] = [];
-  let nodes = 0;
-  const plain = (node: unknown, path: Path, above: readonly unknown[]): unknown => {
-    nodes += 1;
+  const plain = (node: unknown, path: Path): unknown => {
     const target = isAlias(node) ? node.resolve(yaml.document) : node;
     if (isAlias(node) && target === undefined) {
-      problems.push({
-        path,
-        at: "value",
-        message: "This alias names no anchor. Put text that begins with * in quotes.",
-      });
+      const message = "This alias names no anchor. Put text that begins with * in quotes.";
+      problems.push({ path, at: "value", message });
     }
-    if (above.includes(target) || nodes > MOST_NODES) {
-      problems.push({
-        path,
-        at: "value",
-        message: "This alias leads back to itself or repeats too much. Write it out.",
-      });
-      return null;
-    }
-    if (isSeq(target)) return target.items.map((item, i) => plain(item, [...path, i], [...above, target]));
+    if (isSeq(target)) return target.items.map((item, i) => plain(item, [...path, i]));
     if (isMap(target)) {
       const mapping: Record<string, unknown> = Object.create(null); // no inherited names: a column may be "constructor"
       for (const pair of target.items) {
@@ -73,7 +61,7 @@ export function plainData(yaml: YamlText): { value: unknown; problems: readonly 
           const message = key === null ? "A key must be a text." : "No column or key can have this name.";
           problems.push({ path, at: "key", message, ...spanOfKey(pair) });
         } else if (!(key in mapping)) {
-          mapping[key] = plain(pair.value, [...path, key], [...above, target]);
+          mapping[key] = plain(pair.value, [...path, key]);
         }
       }
       return mapping;
@@ -85,9 +73,8 @@ export function plainData(yaml: YamlText): { value: unknown; problems: readonly 
     }
     return target.value;
   };
-  return { value: plain(yaml.document.contents, [], []), problems };
+  return { value: plain(yaml.document.contents, []), problems };
 }
-const MOST_NODES = 100_000; // a plan has hundreds; aliases of aliases can make billions
 
 /** The pair (or list item) at a path, as the tree has it; null where the path leaves the tree. */
 export function nodeAt(yaml: YamlText, path: Path): { key: Scalar | null; value: unknown } | null {

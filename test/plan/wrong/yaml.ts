@@ -67,6 +67,16 @@ export const YAML: readonly WrongPlan[] = [
     ],
   },
   {
+    title: "an alias of what holds it",
+    plan: "«notes»: &a [*a]\n",
+    says: [
+      [
+        "",
+        "The aliases of this plan lead back to themselves, or stand for far more than a plan holds. Write them out.",
+      ],
+    ],
+  },
+  {
     title: "keys that are no text",
     plan: {
       experiment: "experiment: a\n? «[a, b]»\n: c",

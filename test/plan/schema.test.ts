@@ -1,0 +1,57 @@
+import { readFileSync } from "node:fs";
+import { describe, expect, it } from "vitest";
+import { parse } from "yaml";
+import { z } from "zod";
+import { planJsonSchema } from "../../src/plan/index.ts";
+import { planText } from "./plans.ts";
+
+const schema = planJsonSchema();
+/** What an editor does with the JSON Schema: it knows nothing of our zod schema, only of this object. */
+const editor = z.fromJSONSchema(JSON.parse(JSON.stringify(schema)));
+const accepts = (text: string) => editor.safeParse(parse(text)).success;
+const fixture = (name: string) => readFileSync(new URL(`fixtures/${name}`, import.meta.url), "utf8");
+
+describe("the plan's JSON Schema", () => {
+  it("takes the whole format and the smallest plan", () => {
+    expect(accepts(fixture("whole-format.yaml"))).toBe(true);
+    expect(accepts(fixture("fare-calendar.yaml"))).toBe(true);
+    expect(accepts(planText())).toBe(true);
+  });
+
+  it.each([
+    ["an unknown key", { x: "loks: 3" }],
+    ["an unknown key inside", { decision: "decision: {threshold: 1}" }],
+    ["a wrong word", { decision: "decision: {primaries: some}" }],
+    ["a wrong type", { variants: "variants: [{name: 1, control: true}, {name: b}]" }],
+    ["a missing key", { question: "" }],
+    ["one variant", { variants: "variants: [{name: a, control: true}]" }],
+    ["a confidence of 95", { decision: "decision: {confidence: 95}" }],
+    ["an empty where", { filters: "filters: [{name: f, drop: rows, where: {}}]" }],
+    ["two amounts", { metrics: "metrics: [{name: B, summary: mean, of: {}, margin: {relative: 0.1, absolute: 1}}]" }],
+    ["an empty text", { owner: "owner: ''" }],
+  ])("refuses %s", (_, sections) => expect(accepts(planText(sections))).toBe(false));
+
+  it("asks for what a plan must have and for nothing that has a default", () => {
+    expect((schema as { required: string[] }).required.toSorted()).toEqual([
+      "experiment",
+      "log",
+      "metrics",
+      "question",
+      "variants",
+    ]);
+  });
+
+  it("explains every key, for editors that show it", () => {
+    const unexplained: string[] = [];
+    const visit = (node: unknown, path: string): void => {
+      if (typeof node !== "object" || node === null) return;
+      for (const [key, inside] of Object.entries((node as { properties?: object }).properties ?? {})) {
+        if (typeof inside.description !== "string") unexplained.push(`${path}.${key}`);
+      }
+      for (const [key, inside] of Object.entries(node)) visit(inside, `${path}.${key}`);
+    };
+    visit(schema, "");
+    expect(unexplained).toEqual([]);
+    expect(JSON.stringify(schema)).not.toContain('"expected":"');
+  });
+});
