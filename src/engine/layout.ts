@@ -1,4 +1,5 @@
 import type { Filter, Part, Plan, Where } from "../plan/types.ts";
+import type { FileGroup } from "./source.ts";
 
 /**
  * What the stages need to know of a plan, worked out once: which columns are read, which conditions are tested while
@@ -10,6 +11,11 @@ export interface Layout {
   readonly ordered: number;
   /** Per column: whether its values must be numbers, which then stand as v<c>. */
   readonly numeric: readonly boolean[];
+  /**
+   * Per column: where it is nothing but the unit's or the event id's in every file that has it, the role and the entries
+   * of the log where it is so; it need not be stored twice. Else null.
+   */
+  readonly standIns: readonly (StandIn | null)[];
   readonly hasTime: boolean;
   readonly hasEventId: boolean;
   /** Distinct conditions of metric parts (m<i>). */
@@ -19,6 +25,11 @@ export interface Layout {
   /** In plan order. A flag is a condition tested while reading (w<i>). */
   readonly unitFilters: readonly UnitFilterLayout[];
   readonly flags: readonly Where[];
+}
+
+export interface StandIn {
+  readonly role: "unit" | "event_id";
+  readonly sources: readonly number[];
 }
 
 export interface PartLayout {
@@ -34,7 +45,8 @@ export type UnitFilterLayout =
   | { readonly name: string; readonly kind: "at-enrolment" | "ever"; readonly flag: number }
   | { readonly name: string; readonly kind: "listed"; readonly list: number; readonly listedIn: string };
 
-export function layout(plan: Plan): Layout {
+/** @param groups the files as they were opened: which columns they have */
+export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "columns">[]): Layout {
   const parts = plan.metrics.flatMap((metric, index) => [
     { metric: index, side: "of" as const, part: metric.of },
     ...(metric.per === null ? [] : [{ metric: index, side: "per" as const, part: metric.per }]),
@@ -60,6 +72,7 @@ export function layout(plan: Plan): Layout {
     columns,
     ordered: plan.columns.length,
     numeric: columns.map((column) => plan.numericColumns.includes(column)),
+    standIns: columns.map((column) => (plan.numericColumns.includes(column) ? null : standIn(plan, groups, column))),
     hasTime: plan.log.every((source) => source.columns.time !== null),
     hasEventId: plan.log.some((source) => source.columns.eventId !== null),
     matches,
@@ -74,6 +87,18 @@ export function layout(plan: Plan): Layout {
     unitFilters,
     flags,
   };
+}
+
+function standIn(plan: Plan, groups: readonly Pick<FileGroup, "source" | "columns">[], column: string): StandIn | null {
+  const having = groups.filter((group) => group.columns.includes(column));
+  const roles = having.map((group) => {
+    const ours = plan.log[group.source]?.columns;
+    if (ours?.unit === column) return "unit";
+    return ours?.eventId === column ? "event_id" : null;
+  });
+  const [role = null] = roles;
+  if (role === null || roles.some((other) => other !== role)) return null;
+  return { role, sources: [...new Set(having.map((group) => group.source))] };
 }
 
 type Condition = Pick<Part, "event" | "where">;

@@ -18,7 +18,7 @@ import {
   valueList,
   variantCounts,
 } from "./sql/index.ts";
-import type { ByVariant, Facts, Reduction } from "./types.ts";
+import type { ByVariant, Facts, Reduction, ValueCount } from "./types.ts";
 
 type Ledger = Pick<Reduction, "rowsRead" | "rowLines" | "unitsSeen" | "unitLines" | "rejectReasons">;
 
@@ -92,6 +92,10 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
   const [range = {}] = await engine.query(enrolmentRange(ids.length - 1));
   const named = await engine.query(variantCounts());
   const others = await engine.query(otherVariantCounts(VALUES_KEPT));
+  const events = (await engine.query(eventCounts(VALUES_KEPT))).map((row) => ({
+    value: text(row, "value"),
+    rows: count(row, "rows"),
+  }));
   const rowsNaming = (variant: number) => named.find((row) => Number(row["variant"]) === variant);
   const variants = [
     ...plan.variants.flatMap((variant, i) => {
@@ -109,12 +113,9 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
     copiesThatDiffer: copied === undefined ? 0 : count(copied, "differing"),
     copiesOfOtherUnits: copied === undefined ? 0 : count(copied, "other_units"),
     hasEventId: layout.hasEventId,
-    events: (await engine.query(eventCounts(VALUES_KEPT))).map((row) => ({
-      value: text(row, "value"),
-      rows: count(row, "rows"),
-    })),
+    events,
     variants: variants.sort((a, b) => b.rows - a.rows || (a.value < b.value ? -1 : 1)).slice(0, VALUES_KEPT),
-    missingEvents: await missingEvents(plan, engine),
+    missingEvents: await missingEvents(plan, events, engine),
     missingVariants: plan.variants.filter((_, i) => rowsNaming(i) === undefined).map((variant) => variant.name),
     firstEnrolledUs: layout.hasTime ? wholeOrNull(range, "first_us") : null,
     lastEnrolledUs: layout.hasTime ? wholeOrNull(range, "last_us") : null,
@@ -123,13 +124,13 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
 }
 const VALUES_KEPT = 200;
 
-async function missingEvents(plan: Plan, engine: Engine): Promise<string[]> {
+async function missingEvents(plan: Plan, commonest: readonly ValueCount[], engine: Engine): Promise<string[]> {
   const parts = plan.metrics.flatMap((metric) => [metric.of, ...(metric.per === null ? [] : [metric.per])]);
   const named = [plan.enrolment.event, ...parts.map((part) => part.event)].filter((event) => event !== null);
-  const events = [...new Set(named)];
-  if (events.length === 0) return [];
-  const found = (await engine.query(eventsThatOccur(valueList(events)))).map((row) => text(row, "value"));
-  return events.filter((event) => !found.includes(event));
+  const rare = [...new Set(named)].filter((event) => !commonest.some(({ value }) => value === event));
+  if (rare.length === 0 || commonest.length < VALUES_KEPT) return rare;
+  const found = (await engine.query(eventsThatOccur(valueList(rare)))).map((row) => text(row, "value"));
+  return rare.filter((event) => !found.includes(event));
 }
 
 export async function rowsPerFile(files: number, engine: Engine): Promise<number[]> {

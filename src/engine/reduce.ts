@@ -81,7 +81,7 @@ async function stages(
   dialect: Dialect,
   options: ReduceOptions,
 ): Promise<Reduction> {
-  const layout = layoutOf(plan);
+  const layout = layoutOf(plan, log.groups);
   let rowsRead = 0;
   const stage = (name: string, share: number) => {
     options.signal?.throwIfAborted();

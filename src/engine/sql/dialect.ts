@@ -20,7 +20,7 @@ export interface Dialect {
   /** Microseconds to subtract where the text states an offset, else NULL: the clock is the plan's. */
   statedOffsetUs(text: Statement): Statement;
   /** 64-bit hash, for finding what may be equal; equality itself is tested on the text. */
-  hash(text: Statement): Statement;
+  hash(...values: readonly Statement[]): Statement;
   /** 0..1023, the same on every engine: md5, and not the engine's own hash. */
   bucket(unit: Statement): Statement;
   /** Correctly rounded double of a decimal. */
@@ -62,7 +62,7 @@ export const duckdb: Dialect = {
     WHEN regexp_full_match(${text}, ${EPOCH}) OR ends_with(${text}, 'Z') THEN 0
     WHEN regexp_matches(${text}, ${`[T ].*[+-][0-9]{2}(:?[0-9]{2})?$`}) THEN ${offset(sql`regexp_extract(${text}, '[+-][0-9]{2}(:?[0-9]{2})?$')`)}
     END`,
-  hash: (text) => sql`hash(${text})`,
+  hash: (...values) => sql`hash(${join(values, ", ")})`,
   bucket: (unit) => sql`CAST(md5_number(${unit}) & 1023 AS SMALLINT)`,
   toDouble: (decimal) => sql`CASE WHEN abs(${decimal}) < ${EXACT_BELOW}
     THEN CAST(${decimal} AS DOUBLE) ELSE CAST(CAST(${decimal} AS VARCHAR) AS DOUBLE) END`,

@@ -41,7 +41,7 @@ export function rows(
     ${into === "create" ? sql`CREATE TEMP TABLE rows AS` : sql`INSERT INTO rows`}
     SELECT file, source, unit, at_us, event, event_id, ${variantCode(plan)} AS variant,
       CASE WHEN ${variantCode(plan)} = ${plan.variants.length} THEN variant END AS other_variant,
-      ${list([...storedColumns(layout).map((column) => sql`${column}`), ...conditions])},
+      ${list([...storedColumns(layout), ...conditions])},
       variant IS NOT NULL AND ${enrolmentEvent} AS enrols,
       CAST(reason AS SMALLINT) AS reason,
       CAST(CASE WHEN NOT ${isKept} THEN ${FATE.rejected} ${join(filters, "\n")} ELSE ${FATE.seen} END AS SMALLINT) AS fate,
@@ -84,13 +84,26 @@ function judgedRows(
     )`;
 }
 
-/** Columns that later stages order rows by: numbers by value, all else as text. */
+/** The columns that later stages order rows by, as they are stored: numbers by value, all else as text. */
 export function storedColumns(layout: Layout): Statement[] {
-  return layout.columns.slice(0, Math.max(layout.ordered, 0)).map((_, c) => stored(layout, c));
+  const own = layout.columns
+    .slice(0, layout.ordered)
+    .map((_, c) => (layout.standIns[c] == null ? stored(layout, c) : null));
+  return own.filter((column) => column !== null);
 }
 
-export const stored = (layout: Layout, c: number): Statement =>
-  layout.numeric[c] === true ? name(`v${c}`) : name(`x${c}`);
+/** A column over a row of `rows`: stored, or what it stands for. */
+export function stored(layout: Layout, c: number): Statement {
+  const standIn = layout.standIns[c];
+  if (standIn != null) {
+    const sources = join(
+      standIn.sources.map((source) => sql`${source}`),
+      ", ",
+    );
+    return sql`CASE WHEN source IN (${sources}) THEN ${name(standIn.role)} END`;
+  }
+  return layout.numeric[c] === true ? name(`v${c}`) : name(`x${c}`);
+}
 
 function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialect, isNumbered: boolean): Statement {
   const roles = plan.log[group.source]?.columns;

@@ -17,8 +17,9 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
   const analysed = unitLineIds(plan).length - 1;
   const end = plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
   const place = layout.hasTime ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END` : sql`0`;
+  const isShort = plan.followUp !== null && plan.followUp.days < BITS;
   const aggregates = layout.parts.flatMap((part, p) => [
-    sql`${aggregate(part, days, dialect)} AS ${name(`s${p}`)}`,
+    sql`${aggregate(part, isShort, days, dialect)} AS ${name(`s${p}`)}`,
     sql`count(*) FILTER (WHERE ${counted(part)}) AS ${name(`r${p}`)}`,
   ]);
   const metricRows = plan.metrics.flatMap((_, m) => {
@@ -53,7 +54,7 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
         ...metricRows,
       ])}
       FROM (
-        SELECT e.rowid AS id, ${place} AS place, r.*
+        SELECT e.rowid AS id, e.enrolled_us, ${place} AS place, r.*
         FROM rows AS r
         JOIN enrolments AS e ON e.unit = r.unit
         WHERE r.fate = ${FATE.seen} AND e.line = ${analysed}
@@ -65,7 +66,10 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
 
 const counted = (part: PartLayout) => sql`place = 0 AND ${name(`m${part.match}`)}`;
 
-function aggregate(part: PartLayout, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
+// A follow-up that touches no more local days than a 64-bit integer has bits: its days are bits, not a DISTINCT count.
+const BITS = 62;
+
+function aggregate(part: PartLayout, isShort: boolean, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
   const { aggregate } = part.part;
   const value = name(`v${part.value ?? 0}`);
   const where = counted(part);
@@ -73,7 +77,9 @@ function aggregate(part: PartLayout, days: readonly Step<DayRun>[], dialect: Dia
     case "count":
       return sql`count(*) FILTER (WHERE ${where})`;
     case "days":
-      return sql`count(DISTINCT ${localDay(sql`at_us`, days)}) FILTER (WHERE ${where})`;
+      return isShort
+        ? sql`bit_count(bit_or(CASE WHEN ${where} THEN CAST(1 AS BIGINT) << CAST(${localDay(sql`at_us`, days)} - ${localDay(sql`enrolled_us`, days)} AS INTEGER) END))`
+        : sql`count(DISTINCT ${localDay(sql`at_us`, days)}) FILTER (WHERE ${where})`;
     case "sum":
       return sql`sum(${value}) FILTER (WHERE ${where})`;
     case "max":
