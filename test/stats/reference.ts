@@ -1,0 +1,53 @@
+import { readFileSync } from "node:fs";
+
+/** Values made outside this project; the script that made each file stands beside it in test/reference. */
+function read<Shape>(name: string): Shape {
+  return JSON.parse(readFileSync(new URL(`../reference/${name}`, import.meta.url), "utf8")) as Shape;
+}
+
+/** mpmath 1.3.0: z, alpha, t and chi-square with their tails, 20 digits. */
+export const tails = () =>
+  read<{
+    normal: [z: number, upper: string][];
+    critical: [alpha: number, z: string][];
+    student: [t: number, df: number, twoSided: string][];
+    chiSquare: [x: number, df: number, upper: string][];
+  }>("tails.json");
+
+/** Exact fractions, then mpmath 1.3.0. */
+export const exactMoments = () =>
+  read<
+    {
+      name: string;
+      arms: { values: string[]; mean: string; variance: string; skewness: string; kurtosis: string }[];
+    }[]
+  >("moments.json");
+
+/** NIST Statistical Reference Datasets, univariate. */
+export const nist = () =>
+  read<{ sets: { name: string; mean: string; sd: string; values?: number[]; digits?: string }[] }>("nist.json").sets;
+
+interface Interval {
+  confidence: number;
+  low: string;
+  high: string;
+  p: string;
+  relativeLow: string | null;
+  relativeHigh: string | null;
+}
+
+/** R 4.2.2, boot 1.3-28.1. */
+export const fromR = () =>
+  read<{
+    welch: (Interval & { control: number[]; variant: number[]; t: string; df: string; standardError: string })[];
+    shares: (Interval & {
+      control: [number, number];
+      variant: [number, number];
+      wilsonControl: [string, string];
+      wilsonVariant: [string, string];
+    })[];
+    ratio: { numerator: number[]; denominator: number[]; ratio: string; variance: string }[];
+    fisher: { table: [number, number, number, number]; p: string }[];
+    independence: { table: number[][]; chiSquare: string; df: number; p: string; smallestExpected: string }[];
+    goodness: { counts: number[]; shares: number[]; chiSquare: string; df: number; p: string }[];
+  }>("values.json");
