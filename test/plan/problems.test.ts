@@ -56,7 +56,7 @@ plan.yaml:1:1
   });
 
   it("counts and places by the text's own lines, whatever ends them", () => {
-    const text = planText({ owner: "owner: 5" });
+    const text = planText({ experiment: "experiment: 5", owner: "owner: 5" });
     expect(messageOf(loadPlan(`\uFEFF${text.replaceAll("\n", "\r\n")}`))).toBe(messageOf(loadPlan(text)));
   });
 });

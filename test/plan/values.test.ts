@@ -59,6 +59,13 @@ describe("a where", () => {
   });
 });
 
+it("of a filter of units is asked at enrolment, unless the plan says ever", () => {
+  const where = "drop: units, where: {staff: true}";
+  const filters = `filters: [{name: a, ${where}}, {name: b, ${where}, when: at-enrolment}, {name: c, ${where}, when: ever}]`;
+  const whens = planOf(planText({ filters })).filters.map((filter) => ("when" in filter ? filter.when : null));
+  expect(whens).toEqual(["at-enrolment", "at-enrolment", "ever"]);
+});
+
 describe("a share", () => {
   const planWith = (sections: Readonly<Record<string, string>>) => planOf(planText(sections));
 

@@ -48,7 +48,8 @@ export const COMBINATIONS: readonly WrongPlan[] = [
   - {name: b, drop: rows, «listed-in»: ids.csv}
   - {name: c, drop: units, where: {x: 1}, «listed-in»: ids.csv}
   - {name: «d», drop: units}
-  - {name: e, drop: units, listed-in: ids.csv, «when»: ever}`,
+  - {name: e, drop: units, listed-in: ids.csv, «when»: ever}
+  - {name: f, drop: units, «listed-in»: ids.csv, where: {x: 1}, when: ever}`,
     },
     says: [
       ["filters, a", "when is for filters of units; this one drops rows. Remove when, or write drop: units."],
@@ -59,6 +60,7 @@ export const COMBINATIONS: readonly WrongPlan[] = [
         "This filter says nothing about what it removes. Add where, such as where: {is_staff: true}, or listed-in.",
       ],
       ["filters, e", "when says at which rows a where looks; a list of units has none. Remove when."],
+      ["filters, f", "A filter has where or listed-in, not both. Make this a filter of its own."],
     ],
   },
   {

@@ -72,6 +72,13 @@ export const METRICS: readonly WrongPlan[] = [
     ],
   },
   {
+    title: "a figure on a proportion that units without rows do not have, told once",
+    plan: metric("{name: P, summary: proportion, of: {«max»: fare}}"),
+    says: [
+      ["metrics, P", "A proportion counts units with a row, so it takes no max. Remove it, or write summary: mean."],
+    ],
+  },
+  {
     title: "two aggregates of the same rows",
     plan: metric("{name: M, summary: ratio-of-totals, of: {sum: fare, «count»: true}, per: {days: true, «sum»: x}}"),
     says: [

@@ -41,6 +41,17 @@ export const SHAPE: readonly WrongPlan[] = [
     plan: { "unit-called": "unit-called: {one: visitor, many: visitors, «ones»: visitor}" },
     says: [["unit-called", "Unknown key. Known here: one, many."]],
   },
+  {
+    title: "a key as near to one that is taken as to one that is free",
+    plan: { metrics: "metrics: [{name: A, role: primary, summary: mean, of: {max: x, «mix»: y}, without-rows: 0}]" },
+    says: [
+      [
+        "metrics, A",
+        "Unknown key. Did you mean min?",
+        "One figure is taken of the rows, and max stands here already. Remove one of them.",
+      ],
+    ],
+  },
   ...["looks", "forecast", "incidents", "registered", "asked-afterwards", "engine"].map((key): WrongPlan => {
     const known =
       "experiment, question, unit-called, log, timezone, enrolment, variants, ended, follow-up, metrics, filters, " +

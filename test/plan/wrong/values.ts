@@ -172,6 +172,24 @@ export const VALUES: readonly WrongPlan[] = [
     ],
   },
   {
+    title: "an enrolment whose end is local",
+    plan: {
+      timezone: "timezone: Europe/Oslo",
+      enrolment: "enrolment: {from: 2026-03-02T00:00Z, before: «2026-03-02T00:30»}",
+    },
+    says: [
+      [
+        "enrolment",
+        "No unit could enrol: from (2026-03-02T00:00Z) is not before this. Before is the first moment that no longer counts.",
+      ],
+    ],
+  },
+  {
+    title: "a follow-up beyond all bounds",
+    plan: { "follow-up": "follow-up: {days: «36500.5»}" },
+    says: [["follow-up", "Expected a number of days above 0 and up to 36,500."]],
+  },
+  {
     title: "what a where cannot hold",
     plan: {
       filters: `filters:

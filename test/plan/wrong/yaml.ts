@@ -54,6 +54,11 @@ export const YAML: readonly WrongPlan[] = [
     says: [["unit-called", "Inside braces keys are set apart by commas. Look for a missing comma."]],
   },
   {
+    title: "a list that begins behind its key, told once",
+    plan: "variants: «-» {name: a}\n",
+    says: [["", "A list begins on a line of its own, below its key."]],
+  },
+  {
     title: "a second document",
     plan: { metrics: "metrics: [{name: B, role: primary, summary: mean, of: {}}]", x: "«---»", y: "experiment: b" },
     says: [["", "A plan is one YAML document. Remove this line and what follows, or make that a file of its own."]],
