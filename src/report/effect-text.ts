@@ -156,12 +156,12 @@ export function verdictText(effect: Effect, plan: Plan): string {
 }
 
 const VERDICTS: Readonly<Record<Zone, (amount: string) => string>> = {
-  worthwhile: (amount) => `better by more than ${amount}`,
-  better: (amount) => `better; whether by ${amount} is not settled`,
+  worthwhile: (amount) => `better by over ${amount}`,
+  better: (amount) => `better; ${amount} not settled`,
   worse: () => "worse",
-  "too-small": (amount) => `better, but by less than ${amount}`,
+  "too-small": (amount) => `better, but under ${amount}`,
   "no-worthwhile-gain": (amount) => `not better by ${amount}`,
   "not-settled": () => "not settled",
-  within: (amount) => `within its limit of ${amount}`,
-  beyond: (amount) => `beyond its limit of ${amount}`,
+  within: (amount) => `within ${amount}`,
+  beyond: (amount) => `beyond ${amount}`,
 };

@@ -1,6 +1,6 @@
 import type { Effect } from "../decision/types.ts";
 import type { Plan } from "../plan/types.ts";
-import { count } from "../words/index.ts";
+import { count, planPercent } from "../words/index.ts";
 import { effectText, verdictText } from "./effect-text.ts";
 import { controlOf } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
@@ -17,7 +17,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
   const [data] = notes;
   const counted = reduction.unitLines.find((line) => line.id === "analysed")?.units ?? 0;
   return [
-    printable(plan.experiment),
+    ...wrapped(plan.experiment),
     "",
     ...wrapped(conclusion.sentence),
     ...findings(inputs).flatMap((sentence) => wrapped(sentence)),
@@ -35,29 +35,39 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
     .join("\n");
 }
 
-/** One row a metric and variant; each variant gets a table of its own, so that its level stands under its name. */
+/** Each variant has a table of its own, so that its level stands under its name; all tables share their columns. */
 function effectTable(effects: readonly Effect[], plan: Plan): string[] {
   const control = controlOf(plan).name;
   const others = plan.variants.filter((variant) => !variant.isControl);
-  return others.flatMap(({ name }, i) => {
-    const rows = effects
-      .filter((effect) => effect.variant === name)
-      .map((effect) => {
-        const { levels, levelsUnit, shown } = effectText(effect, plan);
-        const [before, after] = levels.map((level) => `${level} ${levelsUnit}`.trimEnd());
-        return [effect.metric, before, after, shown.estimate, shown.interval, verdictText(effect, plan)].map((cell) =>
-          printable(cell ?? ""),
-        );
-      });
-    const head = ["", control, name, "difference", "95% interval", ""].map(printable);
-    return [...(i === 0 ? [] : [""]), ...aligned([head, ...rows])];
+  const tables = others.map(({ name }) => [
+    ["", control, name, "difference", `${planPercent(plan.decision.confidence)} interval`, ""].map(cellText),
+    ...effects.filter((effect) => effect.variant === name).map((effect) => effectCells(effect, plan)),
+  ]);
+  const lines = aligned(tables.flat());
+  return tables.flatMap((table, t) => {
+    const from = tables.slice(0, t).reduce((rows, before) => rows + before.length, 0);
+    return [...(t === 0 ? [] : [""]), ...lines.slice(from, from + table.length)];
   });
+}
+
+function effectCells(effect: Effect, plan: Plan): string[] {
+  const { levels, levelsUnit, shown } = effectText(effect, plan);
+  const [before = "", after = ""] = levels.map((level) => `${level} ${levelsUnit}`.trimEnd());
+  return [effect.metric, before, after, shown.estimate, shown.interval, verdictText(effect, plan)].map(cellText);
+}
+
+const MOST_CELL = 32;
+
+/** A long name is cut, so that the figures beside it stay on the screen; the report has it whole. */
+function cellText(text: string): string {
+  const letters = [...printable(text)];
+  return letters.length <= MOST_CELL ? letters.join("") : `${letters.slice(0, MOST_CELL - 1).join("")}\u2026`;
 }
 
 /** Words to the left, figures to the right; columns as wide as their widest cell. */
 function aligned(rows: readonly (readonly string[])[]): string[] {
   const columns = Math.max(...rows.map((row) => row.length));
-  const widths = Array.from({ length: columns }, (_, c) => Math.max(...rows.map((row) => (row[c] ?? "").length)));
+  const widths = Array.from({ length: columns }, (_, c) => Math.max(...rows.map((row) => [...(row[c] ?? "")].length)));
   return rows.map((row) =>
     row
       .map((cell, c) => (c === 0 || c >= columns - 2 ? cell.padEnd(widths[c] ?? 0) : cell.padStart(widths[c] ?? 0)))

@@ -65,7 +65,7 @@ export const otherChecks: readonly Check[] = [
   pass("filters", "Each filter removed something, and none looks past enrolment."),
   pass("never-occurs", "Every event and variant of the plan occurs in the log."),
   pass("follow-up", "1,410 visitors were not followed to the end (1.4%).", { units: 1_410, share: 0.0138 }),
-  pass("one-unit", "No visitor alone moves a result: the largest holds 0.3% of the variation.", {
+  pass("one-unit", "No visitor alone moves a result: the largest holds 0.3% of the sum of squares.", {
     largestShare: 0.003,
   }),
 ];

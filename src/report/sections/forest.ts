@@ -21,18 +21,22 @@ export interface ForestTable {
   readonly zeroLine: Drawing;
   readonly axis: Drawing;
   readonly anyDrawn: boolean;
+  /** More rows than a printed page holds beside the sentences: the picture may be cut between rows. */
+  readonly long: boolean;
   readonly numberColumns: readonly string[];
   readonly numbers: readonly NumbersRow[];
 }
 export interface ForestGroup {
   readonly purpose: string;
+  readonly measures: readonly ForestMeasure[];
+}
+export interface ForestMeasure {
+  readonly metric: string;
+  /** Of several variants each row is a variant, under the measure's name; of one, the row is the measure. */
+  readonly several: boolean;
   readonly rows: readonly ForestTableRow[];
 }
 export interface ForestTableRow {
-  readonly metric: string;
-  /** The row before has the same metric: its name need not be seen twice. */
-  readonly again: boolean;
-  /** "" where the plan has one variant beside the control: the heading names it. */
   readonly variant: string;
   /** "12.0% → 13.2%". */
   readonly levels: string;
@@ -48,6 +52,8 @@ export interface NumbersRow {
   readonly cells: readonly string[];
 }
 
+const MOST_ROWS_UNCUT = 8;
+
 const GROUPS: readonly Role[] = ["primary", "guardrail", "secondary"];
 
 export async function forestTable(effects: readonly Effect[], plan: Plan): Promise<ForestTable> {
@@ -60,20 +66,21 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
   const groups: ForestGroup[] = [];
   for (const role of GROUPS) {
     const own = ordered.filter((effect) => effect.role === role);
-    if (own.length === 0) continue;
-    const tableRows: ForestTableRow[] = [];
-    for (const effect of own) {
-      const row = rows.get(effect) ?? null;
-      tableRows.push({
-        metric: effect.metric,
-        again: tableRows.at(-1)?.metric === effect.metric,
-        variant: others.length === 1 ? "" : effect.variant,
-        ...rowTexts(effectText(effect, plan)),
-        drawing:
-          row === null ? null : await draw(forestStrip(row, axis), `forest-${ordered.indexOf(effect) + 1}`, null),
-      });
+    const measures: ForestMeasure[] = [];
+    for (const metric of new Set(own.map((effect) => effect.metric))) {
+      const tableRows: ForestTableRow[] = [];
+      for (const effect of own.filter((candidate) => candidate.metric === metric)) {
+        const row = rows.get(effect) ?? null;
+        const id = `forest-${ordered.indexOf(effect) + 1}`;
+        tableRows.push({
+          variant: effect.variant,
+          ...rowTexts(effectText(effect, plan)),
+          drawing: row === null ? null : await draw(forestStrip(row, axis), id, null),
+        });
+      }
+      measures.push({ metric, several: others.length > 1, rows: tableRows });
     }
-    groups.push({ purpose: PURPOSE[role], rows: tableRows });
+    if (measures.length > 0) groups.push({ purpose: PURPOSE[role], measures });
   }
   const control = controlOf(plan).name;
   const several = others.length > 1;
@@ -90,6 +97,7 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
     zeroLine: await draw(forestStrip(null, axis), "forest-zero", null),
     axis: await draw(forestScale(axis, axisLabel), "forest-axis", axisText(axis)),
     anyDrawn: drawn.length > 0,
+    long: ordered.length > MOST_ROWS_UNCUT,
     numberColumns: NUMBERS.map(([head]) => head),
     numbers: ordered.map((effect) => ({
       metric: effect.metric,

@@ -5,7 +5,7 @@ import { ruleOf } from "../../decision/zones.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, number, plural, pText } from "../../words/index.ts";
+import { capital, count, type Interval, plain, plural, pText } from "../../words/index.ts";
 import {
   bareText,
   effectText,
@@ -93,7 +93,7 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
     const unit = metric.unitOfMeasure === null ? "" : ` ${metric.unitOfMeasure}`;
     const changed = plan.variants.map(({ name }, v) => `${count(cells.cap?.units[v] ?? 0)} with ${name}`).join(", ");
     notes.push(
-      `The cap stands at ${number(Number(cells.cap.value))}${unit}; it changed ${plural(total(cells.cap.units), one, many)}: ${changed}.`,
+      `The cap stands at ${plain(Number(cells.cap.value))}${unit}; it changed ${plural(total(cells.cap.units), one, many)}: ${changed}.`,
     );
   }
   if (total(cells.leftOut) > 0) {

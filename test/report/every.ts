@@ -1,0 +1,13 @@
+import type { ReportInputs } from "../../src/report/types.ts";
+import { adopt, keepControl, notSettled, several, undecidable } from "./cases.ts";
+import { hostile } from "./hostile.ts";
+
+/** Every hand-made report, by name. */
+export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])[] = [
+  ["adopt", adopt],
+  ["not settled", notSettled],
+  ["keep the control", keepControl],
+  ["undecidable", undecidable],
+  ["several variants", several],
+  ["hostile", hostile],
+];
