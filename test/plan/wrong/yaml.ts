@@ -13,11 +13,13 @@ export const YAML: readonly WrongPlan[] = [
       experiment: "experiment: a\n«experiment»: b",
       filters: "filters: [{name: f, drop: rows, where: {x: 1, «'x'»: 2}}]",
       planned: "planned: {units: «0»}",
+      "follow-up": "follow-up: {days: 7, «days»: seven}",
     },
     says: [
       ["", "This key stands here a second time. Keep one of the two."],
       ["filters, f", "This key stands here a second time. Keep one of the two."],
       ["planned", "Expected a whole number above 0."],
+      ["follow-up", "This key stands here a second time. Keep one of the two."],
     ],
   },
   {
