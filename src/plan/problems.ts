@@ -31,8 +31,6 @@ const UNREADABLE: Readonly<Record<string, string>> = {
   ENOENT: "is not there. Look at the path; it is read from the current folder",
   ENOTDIR: "is not there. Look at the path; it is read from the current folder",
   EISDIR: "is a folder. Name the plan's file in it",
-  // as a strict TextDecoder calls it
-  ERR_ENCODING_INVALID_ENCODED_DATA: "is not UTF-8. Save it in that encoding",
   EACCES: "may not be read by you. Ask for the right to read it",
 };
 

@@ -10,6 +10,14 @@ export function yamlProblems(faults: readonly YAMLError[], text: string): readon
   return faults.filter((_, i) => lines.indexOf(lines[i] ?? 0) === i).map((fault) => yamlProblem(fault, text));
 }
 
+/** Where a decoder has put its mark for bytes that are no UTF-8; no name with it could match the log's. */
+export function undecoded(text: string): readonly Problem[] {
+  const at = text.indexOf("\u{fffd}");
+  if (at === -1) return [];
+  const message = "This is no character of UTF-8. Save the plan in that encoding.";
+  return [{ path: [], at: "key", message, span: [at, at + 1] }];
+}
+
 /** Lists inside lists beyond this would exhaust the parser before it could tell. A plan is about six deep. */
 export function nestedTooDeep(text: string): Problem | null {
   let depth = 0;

@@ -13,7 +13,7 @@ import {
 } from "yaml";
 import { parseYamlNumber } from "./number.ts";
 import type { DecimalText, Problem } from "./types.ts";
-import { endlessAlias, nestedTooDeep, yamlProblems } from "./yaml-faults.ts";
+import { endlessAlias, nestedTooDeep, undecoded, yamlProblems } from "./yaml-faults.ts";
 
 /** The plan's text, its YAML tree and its lines: what is needed to say where something stands. */
 export interface YamlText {
@@ -38,7 +38,10 @@ export function readYaml(fileText: string): { yaml: YamlText; problems: readonly
   const endless = tooDeep ?? endlessAlias(document);
   return {
     yaml: { text, document, lines },
-    problems: endless === null ? yamlProblems([...document.errors, ...document.warnings], text) : [endless],
+    problems:
+      endless === null
+        ? [...undecoded(text), ...yamlProblems([...document.errors, ...document.warnings], text)]
+        : [endless],
     isBroken: endless !== null || document.errors.some((fault) => fault.code !== "DUPLICATE_KEY"),
   };
 }

@@ -49,7 +49,6 @@ plan.yaml:1:1
     ["ENOENT", "p.yaml is not there. Look at the path; it is read from the current folder."],
     ["EISDIR", "p.yaml is a folder. Name the plan's file in it."],
     ["EACCES", "p.yaml may not be read by you. Ask for the right to read it."],
-    ["ERR_ENCODING_INVALID_ENCODED_DATA", "p.yaml is not UTF-8. Save it in that encoding."],
     ["EIO", "p.yaml cannot be read (EIO)."],
   ])("for a file that cannot be read says why: %s", (code, sentence) => {
     expect(unreadablePlan("p.yaml", code)).toBe(`${sentence} Nothing was computed and no file was written.`);

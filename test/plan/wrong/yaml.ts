@@ -23,6 +23,11 @@ export const YAML: readonly WrongPlan[] = [
     ],
   },
   {
+    title: "bytes that are no UTF-8, told once",
+    plan: { variants: "variants: [{name: Troms«\u{fffd}», control: true}, {name: Bod\u{fffd}}]" },
+    says: [["variants, Troms\u{fffd}", "This is no character of UTF-8. Save the plan in that encoding."]],
+  },
+  {
     title: "a colon inside a text",
     plan: { question: "question: «D»oes it raise: bookings?" },
     says: [["question", 'A second key stands on this line. Put text with a colon in it in quotes: "…: …".']],
