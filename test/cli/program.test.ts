@@ -19,7 +19,7 @@ const DONE: Outcome = {
 };
 
 /** Runs the command line against a library that only remembers what it was asked. */
-async function command(argv: string[], outcome: Outcome | Error = DONE) {
+async function command(argv: string[], outcome: Outcome | Error = DONE, signal = new AbortController().signal) {
   const asked: { plan: string; options: CloseoutOptions }[] = [];
   const [stdout, stderr]: [string[], string[]] = [[], []];
   const terminal: Terminal = {
@@ -39,7 +39,6 @@ async function command(argv: string[], outcome: Outcome | Error = DONE) {
     planJsonSchema: () => ({ title: "plan" }),
     reportJsonSchema: () => ({ title: "report" }),
   };
-  const signal = new AbortController().signal;
   const status = await run(argv, { terminal, load: async () => library, signal, version: "1.2.3" });
   return { status, stdout: stdout.join("\n"), stderr: stderr.join("\n"), asked };
 }
@@ -68,6 +67,15 @@ describe("closeout report", () => {
   it.each([2, 3] as const)("prints problems to stderr alone and ends with the library's status %i", async (status) => {
     const result = await command(["report", "a.yaml"], { status, text: "a.yaml has 1 mistake." });
     expect([result.status, result.stdout, result.stderr]).toEqual([status, "", "a.yaml has 1 mistake."]);
+  });
+
+  it("takes a reading that was stopped for stopped, not for a log that cannot be used", async () => {
+    const stopped = command(
+      ["report", "a.yaml"],
+      { status: 3, text: "The engine could not read." },
+      AbortSignal.abort(),
+    );
+    await expect(stopped).rejects.toThrow("aborted");
   });
 
   it("throws on what nobody foresaw, for main to say as a fault of its own", async () => {
