@@ -1,5 +1,5 @@
-import { isAlias, isMap, isSeq } from "yaml";
-import { keyText, type Path, type YamlText } from "./yaml.ts";
+import { isMap, isSeq } from "yaml";
+import { keyText, type Path, resolved, type YamlText } from "./yaml.ts";
 
 /** A place where the plan names a column of the log. */
 export interface Mention {
@@ -17,7 +17,7 @@ export interface Mention {
 export function columnMentions(yaml: YamlText): readonly Mention[] {
   const mentions: Mention[] = [];
   const visit = (node: unknown, path: Path): void => {
-    const target = isAlias(node) ? node.resolve(yaml.document) : node;
+    const target = resolved(yaml, node);
     if (isSeq(target)) target.items.forEach((item, i) => void visit(item, [...path, i]));
     if (isMap(target)) {
       for (const pair of target.items) {

@@ -48,12 +48,13 @@ interface Placed {
 
 function place(yaml: YamlText, problem: Problem): Placed {
   const span = problem.span ?? spanOf(yaml, problem);
-  const { line, col } = span[0] === 0 ? { line: 1, col: 1 } : yaml.lines.linePos(span[0]);
-  const start = span[0] - (col - 1);
+  const start = yaml.text.slice(0, span[0]).lastIndexOf("\n") + 1;
+  const line = yaml.text.slice(0, start).split("\n").length;
+  const column = span[0] - start + 1;
   const [text = ""] = yaml.text.slice(start).split(/\r?\n/, 1);
   const path = problem.span === undefined ? problem.path : pathAt(yaml, span[0]);
-  const marked: Span = [col - 1, Math.max(Math.min(span[1] - start, text.trimEnd().length), col)];
-  return { problem, span, line, column: col, trail: trail(yaml, path), text, marked };
+  const marked: Span = [column - 1, Math.max(Math.min(span[1] - start, text.trimEnd().length), column)];
+  return { problem, span, line, column, trail: trail(yaml, path), text, marked };
 }
 
 /** The section of the plan, and in a list the name of the item: "metrics, Booked". */

@@ -3,8 +3,10 @@ import type { Problem } from "./types.ts";
 
 /** What keeps a text from being YAML, in our words: the parser's own speak of indicators and implicit keys. */
 
-/** One problem a line: what follows a first fault is mostly its consequence. */
-export function yamlProblems(faults: readonly YAMLError[], text: string): readonly Problem[] {
+/** One problem a line, and none after the point where the parser lost the thread: all else would be its consequence. */
+export function yamlProblems(all: readonly YAMLError[], text: string): readonly Problem[] {
+  const lost = all.findIndex(({ message }) => message.includes("in YAML stream"));
+  const faults = lost === -1 ? all : all.slice(0, lost + 1);
   const lineOf = (offset: number) => text.slice(0, offset).split("\n").length;
   const lines = faults.map((fault) => lineOf(fault.pos[0]));
   return faults.filter((_, i) => lines.indexOf(lines[i] ?? 0) === i).map((fault) => yamlProblem(fault, text));
@@ -103,6 +105,16 @@ const WORDS: readonly (readonly [YAMLError["code"], RegExp, string])[] = [
     "Text follows a closing quotation mark. Put all of the text in one pair of quotes.",
   ],
   ["UNEXPECTED_TOKEN", /same line with key/, "A list begins on a line of its own, below its key."],
+  [
+    "UNEXPECTED_TOKEN",
+    /flow-(seq|map)-end/,
+    "A bracket closes here that was not opened. Remove it, or put the text in quotes.",
+  ],
+  [
+    "UNEXPECTED_TOKEN",
+    /in YAML stream/,
+    "This belongs to nothing above it. Look for a wrong indent, or for a bracket too many before it.",
+  ],
   ["BAD_SCALAR_START", /./, "A text cannot begin with this character. Put the text in quotes."],
   ["TAG_RESOLVE_FAILED", /./, "A plan knows no YAML tags. Remove the word that begins with an exclamation mark."],
 ];

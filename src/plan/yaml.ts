@@ -5,7 +5,6 @@ import {
   isNode,
   isScalar,
   isSeq,
-  LineCounter,
   type Pair,
   parseDocument,
   type Range,
@@ -15,11 +14,10 @@ import { parseYamlNumber } from "./number.ts";
 import type { DecimalText, Problem } from "./types.ts";
 import { endlessAlias, nestedTooDeep, undecoded, yamlProblems } from "./yaml-faults.ts";
 
-/** The plan's text, its YAML tree and its lines: what is needed to say where something stands. */
+/** The plan's text and its YAML tree: what is needed to say where something stands. */
 export interface YamlText {
   readonly text: string;
   readonly document: Document.Parsed;
-  readonly lines: LineCounter;
 }
 export type Path = readonly (string | number)[];
 /** Start and end in the text, as offsets. */
@@ -28,16 +26,14 @@ export type Span = readonly [number, number];
 /** Parses YAML 1.2 (core schema). What is not YAML comes back as problems; no structure is then to be trusted. */
 export function readYaml(fileText: string): { yaml: YamlText; problems: readonly Problem[]; isBroken: boolean } {
   const text = fileText.replace(/^\uFEFF/, ""); // a byte order mark is no column of the first line
-  const lines = new LineCounter();
   const tooDeep = nestedTooDeep(text);
   const document = parseDocument(tooDeep === null ? text : "", {
     schema: "core",
-    lineCounter: lines,
     prettyErrors: false,
   });
   const endless = tooDeep ?? endlessAlias(document);
   return {
-    yaml: { text, document, lines },
+    yaml: { text, document },
     problems:
       endless === null
         ? [...undecoded(text), ...yamlProblems([...document.errors, ...document.warnings], text)]
@@ -50,7 +46,7 @@ export function readYaml(fileText: string): { yaml: YamlText; problems: readonly
 export function plainData(yaml: YamlText): { value: unknown; problems: readonly Problem[] } {
   const problems: Problem[] = [];
   const plain = (node: unknown, path: Path): unknown => {
-    const target = isAlias(node) ? node.resolve(yaml.document) : node;
+    const target = resolved(yaml, node);
     if (isAlias(node) && target === undefined) {
       const message = "This alias names no anchor. Put text that begins with * in quotes.";
       problems.push({ path, at: "value", message });
@@ -83,7 +79,7 @@ export function plainData(yaml: YamlText): { value: unknown; problems: readonly 
 export function nodeAt(yaml: YamlText, path: Path): { key: Scalar | null; value: unknown } | null {
   let found: { key: Scalar | null; value: unknown } = { key: null, value: yaml.document.contents };
   for (const step of path) {
-    const node = isAlias(found.value) ? found.value.resolve(yaml.document) : found.value;
+    const node = resolved(yaml, found.value);
     if (isSeq(node) && typeof step === "number" && step < node.items.length) {
       found = { key: null, value: node.items[step] };
     } else if (isMap(node)) {
@@ -99,8 +95,7 @@ export function nodeAt(yaml: YamlText, path: Path): { key: Scalar | null; value:
 
 /** Gives a key of the tree another name, where the mapping has none of that name; the text stays as it is. */
 export function renameKey(yaml: YamlText, mapping: Path, from: string, to: string): boolean {
-  const value = nodeAt(yaml, mapping)?.value;
-  const node = isAlias(value) ? value.resolve(yaml.document) : value;
+  const node = resolved(yaml, nodeAt(yaml, mapping)?.value);
   if (!isMap(node) || node.items.some((pair) => keyText(pair) === to)) return false;
   const pair = node.items.find((item) => keyText(item) === from);
   if (!isScalar(pair?.key)) return false;
@@ -110,8 +105,7 @@ export function renameKey(yaml: YamlText, mapping: Path, from: string, to: strin
 
 /** A scalar as the text writes it, quotes aside. */
 export function sourceAt(yaml: YamlText, path: Path): string {
-  const value = nodeAt(yaml, path)?.value;
-  const node = isAlias(value) ? value.resolve(yaml.document) : value;
+  const node = resolved(yaml, nodeAt(yaml, path)?.value);
   return isScalar(node) ? (node.source ?? "") : "";
 }
 
@@ -134,9 +128,13 @@ export function pathAt(yaml: YamlText, offset: number): Path {
 
 /** The digits of the number at a path, exactly as the text has them, in canonical form; null if there is no number. */
 export function decimalAt(yaml: YamlText, path: Path): DecimalText | null {
-  const value = nodeAt(yaml, path)?.value;
-  const node = isAlias(value) ? value.resolve(yaml.document) : value;
+  const node = resolved(yaml, nodeAt(yaml, path)?.value);
   return isScalar(node) && typeof node.value === "number" ? decimalText(node) : null;
+}
+
+/** What an alias stands for; every other node is itself. */
+export function resolved(yaml: YamlText, node: unknown): unknown {
+  return isAlias(node) ? node.resolve(yaml.document) : node;
 }
 
 export function keyText(pair: Pair): string | null {

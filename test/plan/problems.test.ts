@@ -1,4 +1,5 @@
 import { readFileSync } from "node:fs";
+import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { loadPlan, type Problem, placeProblems, unreadablePlan } from "../../src/plan/index.ts";
 import { nearest } from "../../src/plan/nearest.ts";
@@ -71,6 +72,55 @@ it("names of the whole plan format what is not built yet, and nothing else", () 
     ["metrics 1 adjust-for", "adjust-for is not built yet. Remove it."],
     ["subgroups", "subgroups is not built yet. Remove it."],
   ]);
+});
+
+it("has an answer to any text: a plan, or places that lie in the text", () => {
+  const texts = ["fare-calendar.yaml", "whole-format.yaml"].map((name) =>
+    readFileSync(new URL(`fixtures/${name}`, import.meta.url), "utf8"),
+  );
+  const junk = fc.constantFrom(
+    "",
+    "\n",
+    " ",
+    "  ",
+    ":",
+    "- ",
+    "{",
+    "]",
+    ",",
+    "'",
+    "&a ",
+    "*a",
+    "null",
+    "[]",
+    "{}",
+    "0x1F",
+    "5%",
+    "-1",
+    "~",
+    "#",
+    "\t",
+    "true",
+    "x: y",
+  );
+  const edits = fc.array(fc.tuple(fc.nat(), fc.nat(30), junk), { minLength: 1, maxLength: 4 });
+  fc.assert(
+    fc.property(fc.constantFrom(...texts), edits, (text, changes) => {
+      const changed = changes.reduce((now, [at, drop, put]) => {
+        const start = at % now.length;
+        return now.slice(0, start) + put + now.slice(start + drop);
+      }, text);
+      const loaded = loadPlan(changed);
+      if ("plan" in loaded) return;
+      expect(loaded.problems.length).toBeGreaterThan(0);
+      const lines = changed.split("\n");
+      for (const [, line, column] of messageOf(loaded).matchAll(/^plan\.yaml:(\d+):(\d+)/gm)) {
+        expect((lines[Number(line) - 1] ?? "").length + 1).toBeGreaterThanOrEqual(Number(column));
+      }
+      expect(messageOf(loaded)).not.toMatch(/undefined|NaN|\[object|Invalid input/);
+    }),
+    { numRuns: Number(process.env.FUZZ ?? 150) },
+  );
 });
 
 it("is done in time with a plan that nests or repeats without end", () => {

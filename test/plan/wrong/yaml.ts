@@ -38,6 +38,11 @@ export const YAML: readonly WrongPlan[] = [
     says: [["", "A bracket that opened above is not closed before this line. Close it with ] or }."]],
   },
   {
+    title: "a bracket too many, and nothing of what follows it",
+    plan: { "unit-called": "unit-called: {one: a, many: b}«]»\nowner: c", x: "looks: 1" },
+    says: [["", "A bracket closes here that was not opened. Remove it, or put the text in quotes."]],
+  },
+  {
     title: "a quotation mark that stays open",
     plan: 'experiment: "fares\nquestion: do they ris«e»\n',
     says: [["", "A quotation mark that opened above is never closed. Close it."]],
