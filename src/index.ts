@@ -70,8 +70,11 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
     });
     return { status: 0, report: rendered.json, terminal, folder: folder.path, files: written };
   } catch (error) {
-    if (error instanceof UnusableLog) return { status: 3, text: error.message };
-    throw error;
+    if (!(error instanceof UnusableLog)) throw error;
+    // A plan with mistakes is told of them first; the log may be meant otherwise.
+    return plan === null
+      ? { status: 2, text: placeProblems(loaded.source, planPath, planProblems) }
+      : { status: 3, text: error.message };
   } finally {
     await folder?.discard();
   }

@@ -57,7 +57,9 @@ async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>
   try {
     return await readHeader(file, path, wanted, engine);
   } catch (cause) {
-    throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause)}`, { cause });
+    throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause, path, file.name)}`, {
+      cause,
+    });
   }
 }
 

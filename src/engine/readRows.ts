@@ -39,7 +39,7 @@ export async function readRows(
   for (const [i, found] of log.groups.entries()) {
     const read = (group: FileGroup) =>
       engine.run(rows(plan, layout, group, i === 0 ? "create" : "insert", zone, dialect));
-    const names = found.files.map((file) => log.files[file.index]?.name).join(", ");
+    const names = found.files.map((file) => log.files[file.index]?.name ?? "").join(", ");
     let group = found;
     try {
       await read(group).catch(async (cause: unknown) => {
@@ -49,7 +49,11 @@ export async function readRows(
         await read(group);
       });
     } catch (cause) {
-      throw new UnusableLog(`The engine could not read ${names}: ${firstLine(cause)}`, { cause });
+      const told = group.files.reduce(
+        (text, file) => text.replaceAll(file.path, log.files[file.index]?.name ?? ""),
+        firstLine(cause, workFolder, ""),
+      );
+      throw new UnusableLog(`The engine could not read ${names}: ${told}`, { cause });
     }
     groups.push(group);
     if (group.format !== "parquet") {
@@ -57,7 +61,6 @@ export async function readRows(
       await dropRejects(engine);
     }
   }
-  await refuseWithoutRows(log, engine);
   return groups;
 }
 
@@ -72,7 +75,8 @@ async function dropRejects(engine: Engine): Promise<void> {
   await engine.run(sql`DROP TABLE IF EXISTS reject_scans`);
 }
 
-async function refuseWithoutRows(log: OpenLog, engine: Engine): Promise<void> {
+/** A log of which no row can be used is refused. */
+export async function refuseWithoutRows(log: OpenLog, engine: Engine): Promise<void> {
   const isReadable =
     log.groups.length > 0 &&
     (await engine.query(sql`SELECT count(*) AS rows FROM rows WHERE fate <> ${FATE.rejected}`)).some(

@@ -11,7 +11,7 @@ import { readLists } from "./lists.ts";
 import { logEnd } from "./logEnd.ts";
 import { metricCells } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
-import { inputFingerprints, readRows } from "./readRows.ts";
+import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import {
   atEnrolment,
@@ -93,6 +93,11 @@ async function stages(
   fingerprints.catch(() => undefined);
   const zone = offsetsByLocalTime(plan.timezone);
   const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect);
+  // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
+  await refuseWithoutRows(log, engine).catch(async (error: unknown) => {
+    await fingerprints;
+    throw error;
+  });
   const perFile = await rowsPerFile(log.files.length, engine);
   rowsRead = perFile.reduce((sum, n) => sum + n, 0);
   const lists = await readLists(plan, layout, folder, engine);
@@ -118,10 +123,10 @@ async function stages(
   const metrics = await metricCells(plan, layout, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
+  const prints = await fingerprints;
   if (options.rejectsTo !== undefined) {
     await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
   }
-  const prints = await fingerprints;
   stage("done", 1);
   return {
     engine: { name: engine.name, version: engine.version },

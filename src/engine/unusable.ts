@@ -3,6 +3,8 @@ export class UnusableLog extends Error {
   override readonly name = "UnusableLog";
 }
 
-/** What an engine's error says, without its hints. */
-export const firstLine = (cause: unknown): string =>
-  cause instanceof Error ? (cause.message.split("\n")[0] ?? "") : String(cause);
+/** What an engine's error says, without its hints, and with a file called by its name in the plan and not by its path. */
+export function firstLine(cause: unknown, path: string, name: string): string {
+  const message = cause instanceof Error ? (cause.message.split("\n")[0] ?? "") : String(cause);
+  return message.replaceAll(path, name);
+}
