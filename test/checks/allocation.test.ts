@@ -96,8 +96,10 @@ describe("allocation", () => {
   });
 
   it("blames no line for groups that were uneven from the start", () => {
-    const found = check({ enrolled: [5000, 5335] });
-    expect(found.sentence).not.toContain("Where it broke");
+    const plan = planOf({ filters: [unitFilter("robots")] });
+    const found = check({ enrolled: [5000, 5335], ended: { "filter:robots": [1, 1] } }, plan);
+    expect(found.parts[1]?.result).toBe("fail");
+    expect(found.parts[1]?.sentence).not.toContain("Where it broke");
     expect(found.parts[1]?.figures).not.toHaveProperty("brokenAt");
   });
 

@@ -33,6 +33,15 @@ describe("never-occurs", () => {
     );
   });
 
+  it("prefers a farther name that the plan does not use to a nearer one that it does", () => {
+    const events = [
+      { value: "booking", rows: 9 },
+      { value: "opening_of_the_search_page", rows: 8 },
+    ];
+    const found = neverOccurs(plan, reductionOf(plan, { facts: { missingEvents: ["search_opened"], events } }));
+    expect(found?.parts[0]?.figures.nearest).toBe("opening_of_the_search_page");
+  });
+
   it("falls back to a name of the plan when the log has no other, and says when it has none", () => {
     const missing = { missingVariants: ["calendar"] };
     const only = neverOccurs(

@@ -53,6 +53,24 @@ describe("adopt", () => {
   });
 });
 
+describe("where fewer is better", () => {
+  const late = metricOf({ ...BOOKED, name: "Cancelled", goodIs: "lower" });
+  const plan = planOf({ metrics: [late] });
+  const asked = (ends: Ends) => askedSentence(effectOf(late, contrastOf(0.12, ends)), plan);
+
+  it("the least and the most of the gain are the high and the low end", () => {
+    expect(asked([-0.137, -0.1, -0.065])).toBe(
+      "Asked for: at least 5% fewer. Even the least that the interval allows, 6.5% fewer, goes beyond that.",
+    );
+    expect(asked([-0.019, -0.011, -0.003])).toBe(
+      "Asked for: at least 5% fewer. The gain is real but smaller: 1.90% fewer at most (95% interval: 1.90% to 0.30% fewer).",
+    );
+    expect(asked([-0.019, 0.03, 0.08])).toBe(
+      "Asked for: at least 5% fewer. The interval rules that out: 1.9% fewer at most (95% interval: 1.9% fewer to 8.0% more).",
+    );
+  });
+});
+
 describe("keep the control", () => {
   it("because it got worse", () => {
     const { decision, sentence } = decide(FERRY, [booked([-0.094, -0.061, -0.027]), HELD]);
