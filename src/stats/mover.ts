@@ -1,4 +1,4 @@
-import { shareDifference } from "./newcombe.ts";
+import { reach, shareDifference } from "./newcombe.ts";
 import { lowerRatioLimit, upperRatioLimit } from "./ratio-limits.ts";
 import { relativeOf } from "./relative.ts";
 import { type Counts, exactShare } from "./share.ts";
@@ -27,7 +27,19 @@ export function moverRatio(control: Counts, variant: Counts, z: number): Relativ
     low:
       variant.successes === 0
         ? -1
-        : lowerRatioLimit({ ...terms, halfControl: c.above, halfVariant: t.below, restControl: c.share - c.above }),
-    high: upperRatioLimit({ ...terms, halfControl: c.below, halfVariant: t.above, restControl: c.low }),
+        : lowerRatioLimit({
+            ...terms,
+            halfControl: c.above,
+            halfVariant: t.below,
+            half: reach(c, t),
+            restControl: c.share - c.above,
+          }),
+    high: upperRatioLimit({
+      ...terms,
+      halfControl: c.below,
+      halfVariant: t.above,
+      half: reach(t, c),
+      restControl: c.low,
+    }),
   };
 }

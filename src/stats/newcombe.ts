@@ -21,7 +21,7 @@ export function newcombe(control: Counts, variant: Counts, z: number): { readonl
 
 /** How far the difference can move when one share rises to its upper limit and the other falls to its lower. */
 export function reach(rising: Wilson, falling: Wilson): number {
-  return Math.hypot(rising.above, falling.below);
+  return Math.sqrt(rising.above ** 2 + falling.below ** 2);
 }
 
 /** p_t - p_c, from whole numbers. */

@@ -15,6 +15,8 @@ export interface RatioTerms {
   /** Half-widths on the side that counts for this end. */
   readonly halfControl: number;
   readonly halfVariant: number;
+  /** sqrt(wt^2 + wc^2), the very number that bounds the difference: so both exclude 0 together, to the last bit. */
+  readonly half: number;
   /** control - halfControl, which a caller may know without the subtraction. */
   readonly restControl: number;
 }
@@ -31,8 +33,7 @@ export function upperRatioLimit(terms: RatioTerms): number {
   return b >= 0 ? (b + root) / a : c / (b - root);
 }
 
-function quadratic({ control, variant, difference, halfControl, halfVariant, restControl }: RatioTerms) {
-  const half = Math.hypot(halfVariant, halfControl);
+function quadratic({ control, variant, difference, halfControl, halfVariant, half, restControl }: RatioTerms) {
   const a = restControl * (control + halfControl);
   const b = difference * control + halfControl ** 2;
   const c = (Math.abs(difference) - half) * (Math.abs(difference) + half);

@@ -27,6 +27,7 @@ export function relative(control: Level, variant: Level, q: number): Relative | 
     halfControl,
     restControl: control.value - halfControl,
     halfVariant: q * Math.sqrt(spread.t),
+    half: q * spread.standardError,
   };
   return {
     estimate: relativeOf(control.exact, variant.exact),

@@ -22,12 +22,13 @@ export function tTwoSided(t: number, df: number): number {
 /**
  * The critical value with two-sided tail alpha: P(|T| > t) = alpha.
  *
- *   I_y(1/2, df/2) = 1 - alpha    t = sqrt(df y / (1 - y))
+ *   I_x(df/2, 1/2) = alpha    t = sqrt(df (1 - x) / x)
+ * x and not 1 - x is sought: with few degrees of freedom and a small alpha x is far under 1e-16.
  * @param alpha in (0, 1)
  * @param df at least 1, need not be whole
  */
 export function tCritical(alpha: number, df: number): number {
-  // Both y and 1 - y come back, so neither tail is a difference.
-  const [y = 0, complement = 1] = betaincinv(0.5, df / 2, 1 - alpha, alpha);
-  return Math.sqrt((df * y) / complement);
+  // x and 1 - x both come back, so neither is a difference.
+  const [x = 1, complement = 0] = betaincinv(df / 2, 0.5, alpha, 1 - alpha);
+  return Math.sqrt((df * complement) / x);
 }

@@ -24,7 +24,7 @@ export interface Wilson {
 export function wilson({ successes, n }: Counts, z: number): Wilson {
   const p = successes / n;
   const q = (n - successes) / n;
-  const s = Math.sqrt(z * z + 4 * successes * q);
+  const s = Math.sqrt(z * z + (4 * (successes * (n - successes))) / n);
   const above = belowShare(q, p, n, z, s);
   return {
     share: p,
@@ -36,5 +36,5 @@ export function wilson({ successes, n }: Counts, z: number): Wilson {
 }
 
 function belowShare(p: number, q: number, n: number, z: number, s: number): number {
-  return p <= q ? (2 * z * p * q) / (s + z * (q - p)) : (z * (s + z * (p - q))) / (2 * (n + z * z));
+  return p <= q ? (2 * z * (p * q)) / (s + z * (q - p)) : (z * (s + z * (p - q))) / (2 * (n + z * z));
 }

@@ -63,15 +63,17 @@ shares <- function(xc, nc, xt, nt, conf) {
   )
 }
 
-# Ratio of totals: boot's weighted ratio of the city data (Cochran's 1920 and 1930 populations) and the variance of its
-# influence values; sum(l^2) / n^2 has the divisor n where ours has n - 1.
+# Ratio of totals: the city data (Cochran's 1920 and 1930 populations). The variance is Cochran 1977, eq. 6.13, without the
+# finite population; beside it that of boot's numerical influence values, sum(l^2) / n^2 with n - 1 for one n.
 library(boot)
 ratio <- function(d) {
   l <- empinf(data = d, statistic = function(d, w) sum(d$x * w) / sum(d$u * w), stype = "w", type = "inf")
   n <- nrow(d)
   named(
     numerator = listed(d$x), denominator = listed(d$u),
-    ratio = text(sum(d$x) / sum(d$u)), variance = text(var.linear(l) * n / (n - 1))
+    ratio = text(sum(d$x) / sum(d$u)),
+    variance = text(sum((d$x - sum(d$x) / sum(d$u) * d$u)^2) / (n * (n - 1) * mean(d$u)^2)),
+    influence = text(var.linear(l) * n / (n - 1))
   )
 }
 

@@ -46,7 +46,7 @@ export const fromR = () =>
       wilsonControl: [string, string];
       wilsonVariant: [string, string];
     })[];
-    ratio: { numerator: number[]; denominator: number[]; ratio: string; variance: string }[];
+    ratio: { numerator: number[]; denominator: number[]; ratio: string; variance: string; influence: string }[];
     fisher: { table: [number, number, number, number]; p: string }[];
     independence: { table: number[][]; chiSquare: string; df: number; p: string; smallestExpected: string }[];
     goodness: { counts: number[]; shares: number[]; chiSquare: string; df: number; p: string }[];

@@ -38,6 +38,16 @@ describe("the critical value of t", () => {
     expectPrinted(tCritical(alpha, df), printed);
   });
 
+  // Readers of a report at a confidence of 0.999999999 would have seen an infinite interval with arms of two units.
+  // R 4.2.2: -qt(alpha / 2, df).
+  it.each([
+    [1e-9, 1.03, 354835341.179175],
+    [1e-12, 1.25, 2928679494.05824],
+    [1e-30, 3, 13016380892.0715],
+  ])("is finite for alpha %f on %f degrees", (alpha, df, expected) => {
+    expectWithin(tCritical(alpha, df), expected, 1e-9); // R's qt has some ten digits out here
+  });
+
   it("nears the normal's as the degrees grow", () => {
     expectWithin(tCritical(0.05, 1e12), normalCritical(0.05), 1e-11);
   });
