@@ -5,6 +5,7 @@ import type { Library } from "./library.ts";
 import { report } from "./report.ts";
 import { schema } from "./schema.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
+import { unwritableText } from "./unwritable.ts";
 import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
 
 export interface Surroundings {
@@ -16,7 +17,6 @@ export interface Surroundings {
 
 /** Reads the arguments and runs the command. A mistake in them is status 2; anything unforeseen is thrown. */
 export async function run(argv: readonly string[], surroundings: Surroundings): Promise<ExitStatus> {
-  const { terminal } = surroundings;
   let status: ExitStatus = 0;
   const program = commands(surroundings, (given) => {
     status = given;
@@ -25,12 +25,22 @@ export async function run(argv: readonly string[], surroundings: Surroundings): 
     await program.parseAsync(argv, { from: "user" });
     return status;
   } catch (error) {
-    const usage = error instanceof CommanderError ? inOurWords(error, program, argv) : error;
-    if (usage === null) return error instanceof CommanderError && error.exitCode === 0 ? 0 : 2;
-    if (!(usage instanceof UsageError)) throw usage;
-    terminal.complain(usage.message);
+    // Printed already: the help or the version that was asked for, or the help in place of a missing command.
+    if (error instanceof CommanderError && PRINTED.includes(error.code)) return error.exitCode === 0 ? 0 : 2;
+    surroundings.terminal.settle();
+    surroundings.terminal.complain(mistakeText(error, program, argv));
     return 2;
   }
+}
+const PRINTED = ["commander.help", "commander.helpDisplayed", "commander.version"];
+
+/** @throws what is no mistake of the user's */
+function mistakeText(error: unknown, program: Command, argv: readonly string[]): string {
+  const usage = error instanceof CommanderError ? inOurWords(error, program, argv) : error;
+  if (usage instanceof UsageError) return usage.message;
+  const unwritable = unwritableText(error);
+  if (unwritable === null) throw error;
+  return unwritable;
 }
 
 function commands({ terminal, load, signal, version }: Surroundings, end: (status: ExitStatus) => void): Command {
@@ -126,7 +136,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptio
   };
 }
 
-/** Commander's complaint as ours; null where it has printed what was asked for, or the help in place of a complaint. */
+/** Commander's complaint as ours; null for one that these commands cannot bring about. */
 function inOurWords(error: CommanderError, program: Command, argv: readonly string[]): UsageError | null {
   const all = program.commands.map((command) => facts(program, command.name()));
   const first = argv.find((word) => !word.startsWith("-"));

@@ -1,6 +1,7 @@
-import { mkdtemp, readdir, readFile, rm, writeFile } from "node:fs/promises";
+import { mkdir, mkdtemp, readdir, readFile, rm, writeFile } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
+import { fileURLToPath } from "node:url";
 import { stripVTControlCharacters } from "node:util";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
 import { withAccents } from "../../src/cli/accents.ts";
@@ -67,6 +68,17 @@ describe("closeout report", () => {
   it.each([2, 3] as const)("prints problems to stderr alone and ends with the library's status %i", async (status) => {
     const result = await command(["report", "a.yaml"], { status, text: "a.yaml has 1 mistake." });
     expect([result.status, result.stdout, result.stderr]).toEqual([status, "", "a.yaml has 1 mistake."]);
+  });
+
+  it("ends with 2 where the report cannot be written, and says where and why", async () => {
+    // Linux, mkdir of a path under a file: Error: ENOTDIR: not a directory, mkdir 'plan.yaml/out'
+    const refused = await mkdir(join(fileURLToPath(import.meta.url), "out")).catch((error: unknown) => error as Error);
+    const { status, stdout, stderr } = await command(
+      ["report", "a.yaml"],
+      refused instanceof Error ? refused : undefined,
+    );
+    expect([status, stdout]).toEqual([2, ""]);
+    expect(stderr).toMatch(/program\.test\.ts.out cannot be written: a part of this path is a file, not a folder\./);
   });
 
   it("takes a reading that was stopped for stopped, not for a log that cannot be used", async () => {

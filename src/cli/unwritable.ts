@@ -1,0 +1,24 @@
+const REASONS: Readonly<Record<string, string>> = {
+  EACCES: "you do not have the right to",
+  EPERM: "you do not have the right to",
+  EROFS: "it can only be read",
+  ENOTDIR: "a part of this path is a file, not a folder",
+  EEXIST: "a file is there, and a folder is needed",
+  EISDIR: "a folder is there, and a file is needed",
+  ENAMETOOLONG: "the name is too long",
+  ENOSPC: "the disk is full",
+  EDQUOT: "your share of the disk is full",
+};
+const WRITING = ["mkdir", "mkdtemp", "open", "write", "rename", "copyfile"];
+
+/** Where a file could not be written or opened: the user's to mend, not a fault of ours. Null for any other error. */
+export function unwritableText(error: unknown): string | null {
+  if (!(error instanceof Error)) return null;
+  const { code = "", syscall = "", path = "a file" } = error as NodeJS.ErrnoException;
+  const reason = REASONS[code];
+  if (reason === undefined || !WRITING.includes(syscall)) return null;
+  // A file of the log is opened too, so that only the others are surely about the place of the results.
+  return syscall === "open"
+    ? `${path} cannot be opened: ${reason}.`
+    : `${path} cannot be written: ${reason}. Name another folder.`;
+}
