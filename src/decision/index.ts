@@ -1,5 +1,7 @@
 // the rule
 
+// why a figure does not exist, to follow "since"
+export { because } from "./absent.ts";
 // what was found, in sentences that page, terminal and summary share
 export { askedSentence } from "./asked.ts";
 export { conclusion } from "./conclusion.ts";

@@ -1,6 +1,13 @@
-import { absolute, amountText, measure, metricOf, signedRule } from "../decision/measure.ts";
-import type { Effect, Zone } from "../decision/types.ts";
-import { ruleOf } from "../decision/zones.ts";
+import {
+  absolute,
+  amountText,
+  type Effect,
+  measure,
+  metricOf,
+  ruleOf,
+  signedRule,
+  type Zone,
+} from "../decision/index.ts";
 import type { Metric, Plan, Role } from "../plan/types.ts";
 import {
   alike,

@@ -1,5 +1,5 @@
 import type { Check } from "../checks/types.ts";
-import type { Effect } from "../decision/types.ts";
+import type { Effect } from "../decision/index.ts";
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { twelveDigits } from "./digits.ts";

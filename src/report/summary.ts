@@ -1,8 +1,9 @@
+import { nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
 import { whenText } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
 import type { ReportInputs } from "./types.ts";
 
-const MOST_ROWS = 6;
+const MOST_FOUND = 5;
 
 /** summary.md: the decision in about twelve lines, to paste into a message or a ticket. */
 export function summaryMd(inputs: ReportInputs): string {
@@ -13,12 +14,21 @@ export function summaryMd(inputs: ReportInputs): string {
     "",
     `**${plain(conclusion.sentence)}**`,
     "",
-    ...findings(inputs)
-      .slice(0, MOST_ROWS)
-      .map((sentence) => `- ${plain(sentence)}`),
+    ...sentences(inputs).map((sentence) => `- ${plain(sentence)}`),
     ...answers(inputs).map(({ question, answer }) => `- ${question} ${plain(answer)}`),
   ];
   return `${lines.join("\n")}\n`;
+}
+
+/** What was found, and what it amounts to or what to do until it is settled; of many the first. */
+function sentences(inputs: ReportInputs): string[] {
+  const { plan, reduction, effects, conclusion } = inputs;
+  const found = findings(inputs);
+  const then =
+    conclusion.decision === "not-settled"
+      ? [whyNotSettled(plan, reduction), untilThen(plan)]
+      : nextSentences(plan, effects, conclusion, reduction).slice(0, 2);
+  return [...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND), ...then];
 }
 
 /** Text from the plan as text: nothing in it may turn into markup where the summary is pasted. */

@@ -1,4 +1,4 @@
-import type { Effect } from "../decision/types.ts";
+import type { Effect } from "../decision/index.ts";
 import type { Plan } from "../plan/types.ts";
 import { count, planPercent } from "../words/index.ts";
 import { effectText, verdictText } from "./effect-text.ts";

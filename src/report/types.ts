@@ -1,5 +1,5 @@
 import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
-import type { Conclusion, DecisionWord, Effect, Zone } from "../decision/types.ts";
+import type { Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
 import type { Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";

@@ -183,6 +183,13 @@ describe("the page", () => {
     }
   });
 
+  it("lets no name turn the figures behind it around: the plan alone keeps its control characters, in a block of its own", async () => {
+    const { html } = await renderReport(hostile);
+    const outside = html.replace(/<pre.*?<\/pre>/s, "");
+    expect(outside).not.toMatch(/[^\P{Cc}\n\t]|[\u202a-\u202e\u2066-\u2069]/u);
+    expect(html).toContain("\u202e");
+  });
+
   it("names each file of the log and of lists with its whole fingerprint", async () => {
     const page = textOf(sectionOf((await renderReport(adopt)).html, "methods"));
     for (const { name, sha256 } of adopt.reduction.inputs) expect(page).toMatch(new RegExp(`${name} .*${sha256}`));

@@ -65,7 +65,7 @@ function roundStep(size: number): number {
 
 /** One row's drawing: zero line, tick, interval as a thin line, estimate as a square. `row` null: the zero line alone. */
 export function forestStrip(row: ForestRow | null, axis: ForestAxis): TopLevelSpec {
-  const zero: Layer = { mark: { type: "rule", color: theme.rule, strokeWidth: 1 }, encoding: { x: at(0, axis) } };
+  const zero: Layer = { mark: { type: "rule", color: theme.line, strokeWidth: 1 }, encoding: { x: at(0, axis) } };
   return { ...frame(HEIGHT), layer: [zero, ...(row === null ? [] : rowMarks(row, axis))] };
 }
 
@@ -116,7 +116,7 @@ export function forestScale(axis: ForestAxis, label: (tick: number) => string): 
   const labels = Object.fromEntries(axis.ticks.map((tick) => [String(tick), label(tick)]));
   return {
     ...frame(AXIS_HEIGHT),
-    mark: { type: "rule", color: theme.rule, strokeWidth: 1 },
+    mark: { type: "rule", color: theme.line, strokeWidth: 1 },
     encoding: {
       y: { value: 0 },
       y2: { value: 0 },
@@ -135,8 +135,8 @@ export function forestScale(axis: ForestAxis, label: (tick: number) => string): 
           labelFontSize: theme.letters,
           labelColor: theme.quiet,
           labelOverlap: false,
-          domainColor: theme.rule,
-          tickColor: theme.rule,
+          domainColor: theme.line,
+          tickColor: theme.line,
         },
       },
     },

@@ -5,7 +5,7 @@
 export const theme = {
   ink: "currentColor",
   quiet: "var(--quiet)",
-  rule: "var(--rule)",
+  line: "var(--line)",
   font: "inherit",
   letters: 13,
 } as const;

@@ -79,7 +79,10 @@ function checkText(check: Check): CheckText {
     outcome: outcomeText(check.result, check.strong),
     sentence: check.sentence,
     remedy: check.remedy,
-    parts: check.parts.map(({ about, result, sentence }) => ({ about, outcome: outcomeText(result, false), sentence })),
+    // the check's own sentence is its worst part's: said once
+    parts: check.parts
+      .filter(({ sentence }) => sentence !== check.sentence)
+      .map(({ about, result, sentence }) => ({ about, outcome: outcomeText(result, false), sentence })),
     figures: figureTexts([...Object.entries(check.figures)], ""),
   };
 }

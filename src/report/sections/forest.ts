@@ -1,7 +1,5 @@
-import { absolute, metricOf, signedRule } from "../../decision/measure.ts";
-import type { Effect } from "../../decision/types.ts";
-import { ruleOf } from "../../decision/zones.ts";
-import type { Plan, Role } from "../../plan/types.ts";
+import { absolute, type Effect, metricOf, ruleOf, signedRule } from "../../decision/index.ts";
+import type { Amount, Plan, Role } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
 import { capital, plain, planPercent, signedPercent } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
@@ -89,6 +87,7 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
     title: `${several ? "Each variant" : capital(variant)} against ${control}: the difference in percent of the level with ${control}`,
     reading: readingText(
       plan,
+      effects,
       drawn.some(({ relative }) => reachesFrame(relative, axis)),
     ),
     levelsHead: `${control} \u2192 ${variant}`,
@@ -116,10 +115,23 @@ function rowTexts(text: EffectText) {
   };
 }
 
-function readingText(plan: Plan, beyond: boolean): string {
-  const confidence = planPercent(plan.decision.confidence);
-  const edge = beyond ? " A line that reaches the edge goes on beyond it; the figures are whole." : "";
-  return `Thin line: ${confidence} interval; square: estimate; long upright: no difference; short upright: what the plan asked for, or its limit.${edge}`;
+/** How the drawing is read, and what of this report is not as a reader would expect it. */
+function readingText(plan: Plan, effects: readonly Effect[], beyond: boolean): string {
+  const control = controlOf(plan).name;
+  const variants = plan.variants.length - 1;
+  const ofAmount = (kind: Amount["kind"]) => effects.some((effect) => ruleOf(metricOf(effect, plan))?.kind === kind);
+  return [
+    `Thin line: ${planPercent(plan.decision.confidence)} interval; square: estimate; long upright: no difference; short upright: what the plan asked for, or its limit.`,
+    ...(ofAmount("absolute")
+      ? [
+          `Where the plan states an amount in the measure\u2019s own unit, line and uprights stand at shares of the level with ${control}.`,
+        ]
+      : []),
+    ...(variants > 1
+      ? [`Intervals of what decides or must not get worse hold for all ${variants} variants together.`]
+      : []),
+    ...(beyond ? ["A line that reaches the edge goes on beyond it; the figures are whole."] : []),
+  ].join(" ");
 }
 
 const NUMBERS: readonly (readonly [head: string, pick: (effect: Effect) => number | null])[] = [

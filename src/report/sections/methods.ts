@@ -1,4 +1,4 @@
-import type { Effect } from "../../decision/types.ts";
+import type { Effect } from "../../decision/index.ts";
 import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";

@@ -1,7 +1,4 @@
-import { because } from "../../decision/absent.ts";
-import { ruleInWords } from "../../decision/measure.ts";
-import type { Effect } from "../../decision/types.ts";
-import { ruleOf } from "../../decision/zones.ts";
+import { because, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
@@ -179,6 +176,6 @@ function besideTexts(effect: Effect, metric: Metric): string[] {
   const { beside, difference } = effect.contrast;
   return beside.map(({ method, low, high }) => {
     const interval: Interval = { estimate: difference.estimate ?? (low + high) / 2, low, high };
-    return `${METHOD[method]}: ${bareText(interval, metric, []).interval}`;
+    return `${METHOD[method]}, ${bareText(interval, metric, []).interval}`;
   });
 }

@@ -10,7 +10,7 @@ export function powerParagraphs(plan: Plan, { unitLines }: Reduction): string[] 
     plan.plannedUnits === null
       ? `The plan states no size. ${count(counted)} ${counted === 1 ? one : many} ${counted === 1 ? "was" : "were"} counted.`
       : `The plan asked for ${plural(plan.plannedUnits, one, many)}, all variants together; ${count(counted)} ${counted === 1 ? "was" : "were"} counted.`;
-  const power = `It asks for a power of ${planPercent(plan.decision.power)}: a test of the right size finds an effect that is really there in so many of 100 tests.`;
+  const power = `The plan asks for a power of ${planPercent(plan.decision.power)}: so many of 100 tests of the right size find an effect as large as the one they were sized for.`;
   return [
     `${asked} ${power}`,
     "The size that a next test needs is not computed in this version. It is never to be taken from the effect found here: that effect is itself uncertain, and a large one is found large partly by chance.",
