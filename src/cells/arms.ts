@@ -38,6 +38,8 @@ export function arms(metric: Metric, cells: MetricCells, variants: number): Arm[
       const scores = scoreSums(cells.ratio.score, variants);
       return of.map((numerator, v) => ratioArm(numerator, at(per, v), at(scores, v)));
     }
+    case "quantile":
+      throw new Error("quantile is not built yet");
     default:
       return unknown(metric.summary);
   }

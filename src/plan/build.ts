@@ -1,6 +1,6 @@
 import { orderedColumns } from "./columns.ts";
 import { decimalOf, parsePercent } from "./number.ts";
-import type { AmountYaml, PartYaml, PlanYaml } from "./schema.ts";
+import type { AmountYaml, MetricYaml, PartYaml, PlanYaml } from "./schema.ts";
 import type { PlanSource } from "./source.ts";
 import { parseTime, timeZoneNamed } from "./time.ts";
 import type { Aggregate, Amount, DecimalText, Filter, LogSource, Metric, Part, Plan } from "./types.ts";
@@ -38,8 +38,11 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
       confidence: Number(shareText(plan.decision.confidence)),
       power: Number(shareText(plan.decision.power)),
       adoptWhen: plan.decision["adopt-when"],
+      primaries: plan.decision.primaries,
+      interval: plan.decision.interval,
     },
     plannedUnits: plan.planned?.units ?? null,
+    forecast: plan.forecast === undefined ? null : { unitsPerMonth: plan.forecast["units-per-month"] },
     texts: {
       ended: plan.ended ?? null,
       owner: plan.owner ?? null,
@@ -73,15 +76,15 @@ export function logSource({ files, columns }: PlanYaml["log"][number]): LogSourc
   };
 }
 
-function builtMetric(metric: PlanYaml["metrics"][number], path: Path, source: PlanSource): Metric {
-  const { name, role, summary, of, per, cap } = metric;
-  if (summary === "quantile") throw new Error("a quantile passed the rules before it was built");
+function builtMetric(metric: MetricYaml, path: Path, source: PlanSource): Metric {
+  const { name, role, summary, of, per, quantile, cap } = metric;
   return {
     name,
     role,
     summary,
     of: builtPart(of, [...path, "of"], source),
     per: per === undefined ? null : builtPart(per, [...path, "per"], source),
+    quantile: quantile === undefined ? null : exactShare(quantile, [...path, "quantile"], source),
     unitOfMeasure: metric.in ?? null,
     goodIs: metric["good-is"],
     worthwhile: builtAmount(metric.worthwhile),
@@ -93,6 +96,7 @@ function builtMetric(metric: PlanYaml["metrics"][number], path: Path, source: Pl
         : cap.quantile === undefined
           ? { kind: "at", at: known(decimalAt(source.yaml, [...path, "cap", "at"]), "cap") }
           : { kind: "quantile", q: exactShare(cap.quantile, [...path, "cap", "quantile"], source) },
+    adjustFor: builtCovariate(metric["adjust-for"]),
     withoutRows: metric["without-rows"] === "leave-out" ? "leave-out" : "zero",
   };
 }
@@ -112,6 +116,14 @@ function builtAggregate(part: PartYaml): Aggregate {
     if (column !== undefined) return { kind, column };
   }
   return { kind: "count" };
+}
+
+function builtCovariate(covariate: MetricYaml["adjust-for"]): Metric["adjustFor"] {
+  if (covariate === undefined) return null;
+  const { "days-before": days, column } = covariate;
+  return days === undefined
+    ? { kind: "column", column: known(column ?? null, "covariate") }
+    : { kind: "days-before", days };
 }
 
 function builtAmount(amount: AmountYaml | undefined): Amount | null {

@@ -174,6 +174,15 @@ export const planSchema = z
       })
       .meta({ description: "What the sizing asked for." })
       .optional(),
+    forecast: z
+      .strictObject({
+        "units-per-month": z.int().gt(0).meta({
+          description: "How many units will enrol in a month, all variants together.",
+          expected: "a whole number above 0",
+        }),
+      })
+      .meta({ description: "What is expected of the time after the test." })
+      .optional(),
     owner: text("Who owns the experiment.").optional(),
     link: text("Where more is written.").optional(),
     limits: text("What the test does not answer.").optional(),
@@ -192,9 +201,10 @@ export const planSchema = z
 
 /** The plan after its shape was checked, defaults filled in, keys as in the YAML. */
 export type PlanYaml = z.output<typeof planSchema>;
-export type PartYaml = PlanYaml["metrics"][number]["of"];
+export type MetricYaml = PlanYaml["metrics"][number];
+export type PartYaml = MetricYaml["of"];
 export type WhereYaml = NonNullable<PartYaml["where"]>;
-export type AmountYaml = NonNullable<PlanYaml["metrics"][number]["worthwhile"]>;
+export type AmountYaml = NonNullable<MetricYaml["worthwhile"]>;
 
 /** The JSON Schema of a plan, for editors; draft 7, which they know best. */
 export function planJsonSchema(): object {

@@ -21,13 +21,15 @@ export interface Plan {
   readonly filters: readonly Filter[];
   readonly decision: Decision;
   readonly plannedUnits: number | null;
+  /** How many units are expected to enrol in a month, all variants together. */
+  readonly forecast: { readonly unitsPerMonth: number } | null;
   readonly texts: PlanTexts;
   /**
    * Every column of the log that the plan names, other than as time, event or variant, in the order of first mention
    * in the YAML text (unit and event-id columns among them). It ends the canonical order of rows (DESIGN 4, rule 3).
    */
   readonly columns: readonly string[];
-  /** Of these, the ones whose values must be numbers: summed, or taken max, min, first or last of. */
+  /** Of these, the ones whose values must be numbers: summed, or taken max, min, first or last of, or adjusted for. */
   readonly numericColumns: readonly string[];
 }
 
@@ -62,7 +64,7 @@ export interface Variant {
   readonly allocation: number;
 }
 
-export type Summary = "mean" | "proportion" | "ratio-of-totals";
+export type Summary = "mean" | "proportion" | "quantile" | "ratio-of-totals";
 export type Role = "primary" | "secondary" | "guardrail";
 
 /** An effect size in the plan: a share of the control's level (0.05 = 5%), or in the metric's own unit. */
@@ -77,6 +79,8 @@ export interface Metric {
   readonly of: Part;
   /** The denominator of a ratio of totals, else null. */
   readonly per: Part | null;
+  /** Which quantile, in (0, 1); null unless the summary is one. */
+  readonly quantile: DecimalText | null;
   /** The unit of measurement, for the reader: "kr". */
   readonly unitOfMeasure: string | null;
   readonly goodIs: "higher" | "lower";
@@ -88,6 +92,11 @@ export interface Metric {
   readonly cap:
     | { readonly kind: "quantile"; readonly q: DecimalText }
     | { readonly kind: "at"; readonly at: DecimalText }
+    | null;
+  /** A covariate of means and proportions: `of` in the days before enrolment, or a column's value at enrolment. */
+  readonly adjustFor:
+    | { readonly kind: "days-before"; readonly days: number }
+    | { readonly kind: "column"; readonly column: string }
     | null;
   readonly withoutRows: "zero" | "leave-out";
 }
@@ -132,6 +141,10 @@ export interface Decision {
   readonly confidence: number;
   readonly power: number;
   readonly adoptWhen: "shown-better" | "shown-worthwhile";
+  /** How many primary metrics must pass. */
+  readonly primaries: "all" | "any";
+  /** Which interval decides where several could. */
+  readonly interval: "normal" | "skew-corrected";
 }
 
 /** Text for the reader, without effect on any number. */

@@ -79,7 +79,10 @@ function metrics(): Metric[] {
 function plansFor(metric: Metric): Plan[] {
   const others = metric.role === "primary" ? [] : [metricOf({ name: "Other", role: "primary" })];
   return (["shown-better", "shown-worthwhile"] as const).map((adoptWhen) =>
-    planOf({ metrics: [metric, ...others], decision: { confidence: 0.95, power: 0.8, adoptWhen } }),
+    planOf({
+      metrics: [metric, ...others],
+      decision: { confidence: 0.95, power: 0.8, adoptWhen, primaries: "all", interval: "normal" },
+    }),
   );
 }
 

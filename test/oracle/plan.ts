@@ -60,8 +60,9 @@ export function planFromYaml(text: string): Plan {
         : { days, incomplete: textAt(at(root, "follow-up"), "incomplete") === "keep" ? "keep" : "exclude" },
     metrics,
     filters,
-    decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better" },
+    decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: numberAt(at(root, "planned"), "units"),
+    forecast: null,
     texts: { ended: textAt(root, "ended"), owner: null, link: null, limits: null, notes: null, decided: null },
     ...namedColumns(root),
   };
@@ -93,6 +94,7 @@ function metricOf(node: Node): Metric {
     summary: textAt(node, "summary") as Metric["summary"],
     of: partOf(at(node, "of")),
     per: per === null ? null : partOf(per),
+    quantile: null,
     unitOfMeasure: textAt(node, "in"),
     goodIs: textAt(node, "good-is") === "lower" ? "lower" : "higher",
     worthwhile: amountOf(at(node, "worthwhile")),
@@ -104,6 +106,7 @@ function metricOf(node: Node): Metric {
         : limit !== null
           ? { kind: "at", at: decimal(limit) }
           : null,
+    adjustFor: null,
     withoutRows: textAt(node, "without-rows") === "leave-out" ? "leave-out" : "zero",
   };
 }
@@ -162,7 +165,9 @@ function scalars(node: Node | null): Scalar[] {
   return (isSeq(node) ? list(node) : [node]).map((item) => {
     const value = isScalar(item) ? item.value : null;
     if (typeof value === "boolean") return { kind: "boolean", value };
-    return typeof value === "number" ? { kind: "number", value: decimal(plain(item)) } : { kind: "text", text: plain(item) };
+    return typeof value === "number"
+      ? { kind: "number", value: decimal(plain(item)) }
+      : { kind: "text", text: plain(item) };
   });
 }
 

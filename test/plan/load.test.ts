@@ -8,12 +8,14 @@ const count = { kind: "count" } as const;
 const metricDefaults = {
   role: "secondary",
   per: null,
+  quantile: null,
   unitOfMeasure: null,
   goodIs: "higher",
   worthwhile: null,
   expected: null,
   margin: null,
   cap: null,
+  adjustFor: null,
   withoutRows: "zero",
 } as const;
 
@@ -103,8 +105,9 @@ describe("a plan", () => {
         },
         { name: "load test", why: null, drop: "units", listedIn: "load_test_ids.csv" },
       ],
-      decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better" },
+      decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: 100000,
+      forecast: null,
       texts: {
         ended: "the planned two weeks were over",
         owner: "search team",
@@ -154,8 +157,9 @@ describe("a plan", () => {
         },
       ],
       filters: [],
-      decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better" },
+      decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: null,
+      forecast: null,
       texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
       columns: ["visitor"],
       numericColumns: [],

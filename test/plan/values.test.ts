@@ -111,6 +111,12 @@ describe("a share", () => {
       decision: "decision: {confidence: 99%, power: 0.9, adopt-when: shown-better, primaries: all, interval: normal}",
     });
     expect(plan.variants.map(({ allocation }) => allocation)).toEqual([0.9, 0.1]);
-    expect(plan.decision).toEqual({ confidence: 0.99, power: 0.9, adoptWhen: "shown-better" });
+    expect(plan.decision).toEqual({
+      confidence: 0.99,
+      power: 0.9,
+      adoptWhen: "shown-better",
+      primaries: "all",
+      interval: "normal",
+    });
   });
 });

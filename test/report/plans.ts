@@ -8,12 +8,14 @@ export const booked: Metric = {
   summary: "proportion",
   of: { event: "booking", where: [], aggregate: count },
   per: null,
+  quantile: null,
   unitOfMeasure: null,
   goodIs: "higher",
   worthwhile: { kind: "relative", value: 0.05 },
   expected: null,
   margin: null,
   cap: null,
+  adjustFor: null,
   withoutRows: "zero",
 };
 
@@ -128,8 +130,9 @@ export const farePlan: Plan = {
       where: [{ column: "is_staff", kind: "in", values: [{ kind: "boolean", value: true }] }],
     },
   ],
-  decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better" },
+  decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
   plannedUnits: 100_000,
+  forecast: null,
   texts: {
     ended: "the planned two weeks were over",
     owner: "search team",

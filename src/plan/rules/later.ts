@@ -19,6 +19,7 @@ export function laterRules(plan: Loose): readonly Problem[] {
     ),
     ...adjusted.map(({ path }) => notBuilt([...path, "adjust-for"], "key", "adjust-for", "Remove it.")),
     ...("subgroups" in plan ? [notBuilt(["subgroups"], "key", "subgroups", "Remove it.")] : []),
+    ...("forecast" in plan ? [notBuilt(["forecast"], "key", "forecast", "Remove it.")] : []),
     ...(decision.primaries === "any"
       ? [notBuilt(["decision", "primaries"], "value", "primaries: any", "Write all, or remove the key.")]
       : []),

@@ -143,6 +143,7 @@ export const COMBINATIONS: readonly WrongPlan[] = [
     without-rows: leave-out`,
       subgroups: "«subgroups»: [country]",
       decision: "decision: {primaries: «any», interval: «skew-corrected»}",
+      forecast: "«forecast»: {units-per-month: «0»}",
     },
     says: [
       ["metrics, Booked", "adjust-for is not built yet. Remove it."],
@@ -155,6 +156,8 @@ export const COMBINATIONS: readonly WrongPlan[] = [
       ["", "subgroups is not built yet. Remove it."],
       ["decision", "primaries: any is not built yet. Write all, or remove the key."],
       ["decision", "interval: skew-corrected is not built yet. Write normal, or remove the key."],
+      ["", "forecast is not built yet. Remove it."],
+      ["forecast", "Expected a whole number above 0."],
     ],
   },
 ];
