@@ -40,7 +40,9 @@ export function guardrailSentence(effect: Effect, plan: Plan): string {
 
   function verdict(): string {
     if (effect.zone === "within")
-      return surelyWorse(effect, plan) ? "Within the limit, but worse beyond doubt." : "Within the limit.";
+      return surelyWorse(effect, plan)
+        ? "Within the limit, though the whole interval is on the worse side."
+        : "Within the limit.";
     if (effect.zone === "beyond") return "Beyond the limit.";
     return reason === null
       ? `Not settled: ${notRuledOut(effect, plan)}.`

@@ -19,7 +19,7 @@ export {
   signedEstimate,
   signedInterval,
 } from "./interval.ts";
-export { capital, list, plural, quoted, small } from "./nouns.ts";
+export { capital, list, plural, quoted } from "./nouns.ts";
 export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
 export { percent, planPercent, signedPercent } from "./percent.ts";
-export { type Rates, rates, rateText } from "./rate.ts";
+export { type Rates, rates } from "./rate.ts";

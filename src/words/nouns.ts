@@ -21,10 +21,3 @@ export function capital(text: string): string {
   const [first = ""] = text;
   return first.toUpperCase() + text.slice(first.length);
 }
-
-/** The first letter small, for a name inside a sentence; a name with further capitals stays as it is. */
-export function small(text: string): string {
-  const [first = ""] = text;
-  const rest = text.slice(first.length);
-  return /\p{Lu}/u.test(rest) || /^I\b/.test(text) ? text : first.toLowerCase() + rest;
-}

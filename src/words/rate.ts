@@ -17,9 +17,3 @@ export function rates(shares: readonly number[]): Rates {
   const decimals = spread === 0 ? 1 : Math.min(6, Math.max(1, -Math.floor(Math.log10(spread))));
   return { of: count(base), texts: shares.map((share) => fixed(share * base, decimals)) };
 }
-
-/** "13.2 of 100 visitors". */
-export function rateText(share: number, many: string): string {
-  const { of, texts } = rates([share]);
-  return `${texts[0]} of ${of} ${many}`;
-}

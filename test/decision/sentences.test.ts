@@ -48,7 +48,7 @@ describe("adopt", () => {
     const { decision, reasons } = decide(FERRY, [GAIN, contacts([0.01, 0.025, 0.04])]);
     expect(decision).toBe("adopt");
     expect(reasons[1]).toBe(
-      'Must not get worse: Support contacts, limit 5% more. Found with "calendar": 2.5% more (95% interval: 1.0% to 4.0% more). Within the limit, but worse beyond doubt.',
+      'Must not get worse: Support contacts, limit 5% more. Found with "calendar": 2.5% more (95% interval: 1.0% to 4.0% more). Within the limit, though the whole interval is on the worse side.',
     );
   });
 });
