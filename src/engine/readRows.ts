@@ -34,6 +34,7 @@ export async function readRows(
   workFolder: string,
   engine: Engine,
   dialect: Dialect,
+  signal: AbortSignal | undefined,
 ): Promise<FileGroup[]> {
   const groups: FileGroup[] = [];
   for (const [i, found] of log.groups.entries()) {
@@ -49,6 +50,7 @@ export async function readRows(
         await read(group);
       });
     } catch (cause) {
+      signal?.throwIfAborted();
       const told = group.files.reduce(
         (text, file) => text.replaceAll(file.path, log.files[file.index]?.name ?? ""),
         firstLine(cause, workFolder, ""),

@@ -92,7 +92,7 @@ async function stages(
   // A failure is met where it is awaited; until then it must not count as unhandled.
   fingerprints.catch(() => undefined);
   const zone = offsetsByLocalTime(plan.timezone);
-  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect);
+  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, options.signal);
   // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
   await refuseWithoutRows(log, engine).catch(async (error: unknown) => {
     await fingerprints;

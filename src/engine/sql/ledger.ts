@@ -37,25 +37,25 @@ export const unitsWithFate = (fate: number, unknownVariantLine: number): Stateme
 export const enrolmentRange = (analysedLine: number): Statement => sql`
   SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line = ${analysedLine}`;
 
-/** Values that readable rows hold, commonest first. */
+/** Values that rows hold, rejected ones included, commonest first. */
 export const eventCounts = (limit: number): Statement => sql`
   SELECT event AS value, count(*) AS rows FROM rows
-  WHERE fate <> ${FATE.rejected} AND event IS NOT NULL
+  WHERE event IS NOT NULL
   GROUP BY event ORDER BY rows DESC, value LIMIT ${limit}`;
 
 export const variantCounts = (): Statement => sql`
   SELECT variant, count(*) AS rows FROM rows
-  WHERE fate <> ${FATE.rejected} AND variant IS NOT NULL
+  WHERE variant IS NOT NULL
   GROUP BY variant`;
 
 export const otherVariantCounts = (limit: number): Statement => sql`
   SELECT other_variant AS value, count(*) AS rows FROM rows
-  WHERE fate <> ${FATE.rejected} AND other_variant IS NOT NULL
+  WHERE other_variant IS NOT NULL
   GROUP BY other_variant ORDER BY rows DESC, value LIMIT ${limit}`;
 
-/** Which of some events a readable row has. */
+/** Which of some events a row has. */
 export const eventsThatOccur = (events: Statement): Statement => sql`
-  SELECT DISTINCT event AS value FROM rows WHERE fate <> ${FATE.rejected} AND event IN (${events})`;
+  SELECT DISTINCT event AS value FROM rows WHERE event IN (${events})`;
 
 /** Counted rows of each metric, and those of them without a number. */
 export function countedRows(metrics: number): Statement {
