@@ -52,11 +52,15 @@ const NANO_LIMIT = 10n ** 27n;
 
 /** The value in 10^-9, more places rounded half away from zero; "out-of-range" where that is 10^18 or beyond. */
 export function toNano(value: Decimal): bigint | "out-of-range" {
-  if (value.sign === 0 || value.lead < -10) return 0n;
   if (value.lead >= 18) return "out-of-range";
+  const nano = rounded(value);
+  return nano >= NANO_LIMIT || nano <= -NANO_LIMIT ? "out-of-range" : nano;
+}
+
+function rounded(value: Decimal): bigint {
+  if (value.sign === 0 || value.lead < -10) return 0n;
   const shift = value.lead - (value.digits.length - 1) + 9;
   const size = shift >= 0 ? BigInt(value.digits) * 10n ** BigInt(shift) : roundedQuotient(BigInt(value.digits), -shift);
-  if (size >= NANO_LIMIT) return "out-of-range";
   return value.sign < 0 ? -size : size;
 }
 
@@ -66,12 +70,11 @@ function roundedQuotient(size: bigint, places: number): bigint {
   return (2n * size + divisor) / (2n * divisor);
 }
 
-/** Of a text that must be a number, such as one from a plan. */
+/** Of a text that must be a decimal, of any size: from a plan, or a sum that an engine gives. */
 export function nanoOf(text: string): bigint {
   const value = readDecimal(text);
-  const nano = value === null ? null : toNano(value);
-  if (nano === null || nano === "out-of-range") throw new Error(`not a number of the plan: ${text}`);
-  return nano;
+  if (value === null) throw new Error(`not a number: ${text}`);
+  return rounded(value);
 }
 
 /** 1500000000n -> "1.5". */

@@ -2,7 +2,7 @@ import { readFile } from "node:fs/promises";
 import path from "node:path";
 import { reduce } from "../../src/engine/index.ts";
 import type { Reduction } from "../../src/engine/types.ts";
-import { closeout } from "../../src/index.ts";
+
 import { loadPlan, placeProblems } from "../../src/plan/index.ts";
 
 /** How the tests reach the product: here alone. */
@@ -25,6 +25,7 @@ export async function runReport(
   planPath: string,
   options: RunOptions = {},
 ): Promise<{ readonly effects: string; readonly flow: string; readonly checks: string }> {
+  const { closeout } = await import("../../src/index.ts");
   const outcome = await closeout(planPath, { ...options, out: path.join(path.dirname(planPath), "report") });
   if (outcome.status !== 0) throw new Error(outcome.text);
   const { effects, flow, checks } = outcome.report;

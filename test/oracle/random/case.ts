@@ -30,18 +30,29 @@ export function randomCase(seed: number): RandomCase {
     return planText(logFirst ? { log, ...drawn.pieces } : { ...drawn.pieces, log });
   };
   const { numericColumns } = planFromYaml(plan(shape.sources.map(() => "")));
-  const sources = drawLog(dice, shape, { enrolmentEvent: drawn.enrolmentEvent, numericColumns, clock: clockOf(shape.zone.zone) });
+  const sources = drawLog(dice, shape, {
+    enrolmentEvent: drawn.enrolmentEvent,
+    numericColumns,
+    clock: clockOf(shape.zone.zone),
+  });
   return { seed, sources, lists: drawn.lists, plan };
 }
 
 function columnsPiece(dice: Dice, names: Shape["sources"][number]["names"]): Piece {
   const { eventId, ...others } = names;
-  const given = Object.entries({ ...others, "event-id": eventId }).filter((pair): pair is [string, string] => pair[1] !== null);
+  const given = Object.entries({ ...others, "event-id": eventId }).filter(
+    (pair): pair is [string, string] => pair[1] !== null,
+  );
   return reordered(dice, Object.fromEntries(given));
 }
 
 /** Plan, log and lists in a folder; gives the plan's path and text. */
-export function writeCase(folder: string, drawn: RandomCase, form: Form, seed = drawn.seed): { path: string; text: string } {
+export function writeCase(
+  folder: string,
+  drawn: RandomCase,
+  form: Form,
+  seed = drawn.seed,
+): { path: string; text: string } {
   const patterns = writeLog(diceOf(seed + 1_000_000), folder, drawn.sources, form);
   const text = drawn.plan(patterns);
   const path = join(folder, "plan.yaml");

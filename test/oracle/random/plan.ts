@@ -1,6 +1,7 @@
+import { ascending } from "../number.ts";
 import type { Dice } from "./dice.ts";
-import { drawRowFilterWhere, drawWhere } from "./where.ts";
 import { NUMERIC_EXTRAS, type Shape } from "./shape.ts";
+import { drawRowFilterWhere, drawWhere } from "./where.ts";
 import type { Piece } from "./yaml.ts";
 
 /** A list of unit ids that a filter names. */
@@ -49,22 +50,26 @@ function drawFollowUp(dice: Dice, shape: Shape): { [key: string]: Piece } {
 }
 
 function drawEnrolment(dice: Dice, shape: Shape, event: string | null): { [key: string]: Piece } {
-  const bound = (): Piece => {
-    const instant = dice.pick(shape.instants);
+  const ordered = [...shape.instants].sort(ascending);
+  const bound = (instants: readonly bigint[]): Piece => {
+    const instant = dice.pick(instants);
     return dice.chance(0.4) ? digits(isoText(instant).slice(0, 10)) : isoText(instant);
   };
-  const bounds = shape.hasTime ? [bound(), bound()].sort((a, b) => (sortKey(a) < sortKey(b) ? -1 : 1)) : [];
-  const [from, before] = bounds;
-  const two = from !== undefined && before !== undefined && sortKey(from).slice(0, 10) < sortKey(before).slice(0, 10);
+  const half = Math.ceil(ordered.length / 2);
+  const from = bound(ordered.slice(0, Math.ceil(half / 2)));
+  const before = bound(ordered.slice(half - 1));
+  // A day alone is local, an instant is UTC: two days apart, from is surely the earlier.
+  const apart = Date.parse(dayOf(before)) - Date.parse(dayOf(from)) >= 2 * 86_400_000;
   return {
     ...(event === null ? {} : { event }),
-    ...(from !== undefined && dice.chance(0.3) ? { from } : {}),
-    ...(before !== undefined && two && dice.chance(0.3) ? { before } : {}),
+    ...(shape.hasTime && dice.chance(0.3) ? { from } : {}),
+    ...(shape.hasTime && apart && dice.chance(0.3) ? { before } : {}),
     ...dice.pick([{}, { "in-two-variants": "first" }, { "in-two-variants": "exclude" }]),
   };
 }
 
-const sortKey = (bound: Piece): string => (typeof bound === "string" ? bound : (bound as { digits: string }).digits);
+const dayOf = (bound: Piece): string =>
+  (typeof bound === "string" ? bound : (bound as { digits: string }).digits).slice(0, 10);
 
 /** With six places: 2026-03-29T01:00:00.000001Z. */
 export function isoText(us: bigint): string {
@@ -75,8 +80,8 @@ export function isoText(us: bigint): string {
 
 function drawFilters(dice: Dice, shape: Shape): { filters: Piece[]; lists: RandomList[] } {
   const lists: RandomList[] = [];
-  const filters = Array.from({ length: dice.pick([0, 1, 1, 2, 3]) }, (_, at): Piece => {
-    const name = dice.pick(["staff", "load test", "it's: \"odd\""]) + (at === 0 ? "" : ` ${at}`);
+  const filters = Array.from({ length: dice.pick([0, 0, 1, 1, 2, 3]) }, (_, at): Piece => {
+    const name = dice.pick(["staff", "load test", 'it\'s: "odd"']) + (at === 0 ? "" : ` ${at}`);
     const kind = dice.pick(["rows", "rows", "at-enrolment", "ever", "listed"]);
     if (kind === "rows") return reordered(dice, { name, drop: "rows", where: drawRowFilterWhere(dice, shape) });
     if (kind !== "listed") {
@@ -93,7 +98,11 @@ function drawFilters(dice: Dice, shape: Shape): { filters: Piece[]; lists: Rando
 function drawList(dice: Dice, shape: Shape, at: number): RandomList {
   const column = dice.chance(0.5) ? dice.pick(shape.sources).names.unit : null;
   const plain = column === null ? shape.units.filter((unit) => /^[\p{L}\d ]+$/u.test(unit)) : shape.units;
-  return { file: column === null ? `ids ${at}.txt` : `ids-${at}.csv`, column, ids: [...dice.some(plain, 0.3), "nobody"] };
+  return {
+    file: column === null ? `ids ${at}.txt` : `ids-${at}.csv`,
+    column,
+    ids: [...dice.some(plain, 0.3), "nobody"],
+  };
 }
 
 function drawMetric(dice: Dice, shape: Shape, at: number): Piece {
@@ -101,7 +110,9 @@ function drawMetric(dice: Dice, shape: Shape, at: number): Piece {
   const name = `metric ${at}`;
   const of = drawPart(dice, shape, summary === "proportion");
   const per = summary === "ratio-of-totals" ? drawPart(dice, shape, false) : null;
-  const needsZero = [of, per].some((part) => part !== null && ["max", "min", "first", "last"].some((key) => key in part));
+  const needsZero = [of, per].some(
+    (part) => part !== null && ["max", "min", "first", "last"].some((key) => key in part),
+  );
   const cap = summary === "proportion" ? {} : dice.pick([{}, {}, { cap: drawCap(dice, shape) }]);
   return reordered(dice, {
     name,
@@ -120,17 +131,42 @@ function drawRole(dice: Dice, at: number): { [key: string]: Piece } {
   return dice.pick([{}, { role: "secondary" }, { role: "guardrail", margin: { relative: digits("0.05") } }]);
 }
 
-function drawWithoutRows(dice: Dice, summary: "mean" | "proportion" | "ratio-of-totals", needed: boolean): { [key: string]: Piece } {
+function drawWithoutRows(
+  dice: Dice,
+  summary: "mean" | "proportion" | "ratio-of-totals",
+  needed: boolean,
+): { [key: string]: Piece } {
   const zero = { "without-rows": digits("0") };
   if (summary !== "mean") return needed ? zero : {};
-  return needed ? dice.pick([zero, { "without-rows": "leave-out" }]) : dice.pick([{}, {}, zero, { "without-rows": "leave-out" }]);
+  return needed
+    ? dice.pick([zero, { "without-rows": "leave-out" }])
+    : dice.pick([{}, {}, zero, { "without-rows": "leave-out" }]);
 }
 
 function drawPart(dice: Dice, shape: Shape, countOnly: boolean): { [key: string]: Piece } {
   const column = dice.pick(NUMERIC_EXTRAS);
-  const timed: { [key: string]: Piece }[] = shape.hasTime ? [{ days: true }, { days: true }, { first: column }, { last: column }] : [];
-  const taken: { [key: string]: Piece }[] = [{}, { count: true }, { sum: column }, { sum: column }, { max: column }, { min: column }, ...timed];
-  const event = shape.hasEvent ? dice.pick([{}, { event: "booking" }, { event: "booking" }, { event: "search" }, { event: "page" }, { event: "call" }]) : {};
+  const timed: { [key: string]: Piece }[] = shape.hasTime
+    ? [{ days: true }, { days: true }, { first: column }, { last: column }, { first: column }, { last: column }]
+    : [];
+  const taken: { [key: string]: Piece }[] = [
+    {},
+    { count: true },
+    { sum: column },
+    { sum: column },
+    { max: column },
+    { min: column },
+    ...timed,
+  ];
+  const event = shape.hasEvent
+    ? dice.pick([
+        {},
+        { event: "booking" },
+        { event: "booking" },
+        { event: "search" },
+        { event: "page" },
+        { event: "call" },
+      ])
+    : {};
   return {
     ...event,
     ...(dice.chance(0.3) ? { where: drawWhere(dice, shape) } : {}),
@@ -140,6 +176,8 @@ function drawPart(dice: Dice, shape: Shape, countOnly: boolean): { [key: string]
 
 function drawCap(dice: Dice, shape: Shape): Piece {
   if (dice.chance(0.6)) return { quantile: digits(dice.pick(["0.5", "0.25", "0.9", "75%", "0.6", "1e-1"])) };
-  const numbers = Object.values(shape.pools).flat().filter((text) => /^\d+(\.\d{1,9})?$/.test(text));
+  const numbers = Object.values(shape.pools)
+    .flat()
+    .filter((text) => /^\d+(\.\d{1,9})?$/.test(text));
   return { at: digits(dice.pick([...numbers, "1", "2.5"]).replace(/^0+(?=\d)/, "")) };
 }

@@ -5,7 +5,6 @@ import { EDGE_NUMBERS, NUMBERS, TEXTS, UNITS, ZONES } from "./values.ts";
 export interface Shape {
   readonly zone: (typeof ZONES)[number];
   readonly variants: readonly string[];
-  readonly events: readonly string[];
   readonly units: readonly string[];
   readonly sources: readonly SourceShape[];
   readonly hasTime: boolean;
@@ -20,6 +19,8 @@ export interface Shape {
 export interface SourceShape {
   readonly names: Names;
   readonly extras: readonly string[];
+  /** The events that its rows mostly have. */
+  readonly events: readonly string[];
 }
 /** The log's own name of each column; null where the source has none. */
 export interface Names {
@@ -48,8 +49,7 @@ export function drawShape(dice: Dice): Shape {
     zone,
     followUpDays,
     variants: dice.pick(VARIANTS),
-    events: ["search", "booking", "page"],
-    units: dice.shuffled(UNITS).slice(0, dice.between(2, 7)),
+    units: dice.shuffled(UNITS).slice(0, dice.between(2, 9)),
     sources: drawSources(dice, layout),
     hasTime: layout !== "timeless",
     hasEvent: layout === "one" || layout === "two",
@@ -58,29 +58,37 @@ export function drawShape(dice: Dice): Shape {
   };
 }
 
+const EVENTS = ["search", "search", "booking", "booking", "page"];
 const OURS = { unit: "visitor", time: "at", event: "event", variant: "arm", eventId: "id" };
 const THEIRS = { unit: "customer no", time: "when", event: "what", variant: "group", eventId: "row-id" };
 
 function drawSources(dice: Dice, layout: "one" | "two" | "table" | "timeless"): SourceShape[] {
   const eventId = () => dice.chance(0.6);
   const drop = (names: Names, gone: readonly (keyof Names)[]): Names =>
-    Object.fromEntries(Object.entries(names).map(([key, name]) => [key, gone.includes(key as keyof Names) ? null : name])) as unknown as Names;
+    Object.fromEntries(
+      Object.entries(names).map(([key, name]) => [key, gone.includes(key as keyof Names) ? null : name]),
+    ) as unknown as Names;
   const ids = (): (keyof Names)[] => (eventId() ? [] : ["eventId"]);
   const ours = dice.pick([OURS, THEIRS]);
   switch (layout) {
     case "one":
-      return [{ names: drop(ours, ids()), extras: EXTRAS }];
+      return [{ names: drop(ours, ids()), extras: EXTRAS, events: EVENTS }];
     case "table":
-      return [{ names: drop(ours, [...ids(), "event"]), extras: EXTRAS }];
+      return [{ names: drop(ours, [...ids(), "event"]), extras: EXTRAS, events: EVENTS }];
     case "timeless":
-      return [{ names: drop(ours, [...ids(), "event", "time"]), extras: EXTRAS }];
+      return [{ names: drop(ours, [...ids(), "event", "time"]), extras: EXTRAS, events: EVENTS }];
     case "two": {
       const second = dice.pick([OURS, THEIRS]);
       const apart = dice.chance(0.5);
       const extras = dice.some(EXTRAS, 0.6);
+      const divided = apart && dice.chance(0.7);
       return [
-        { names: drop(ours, ids()), extras },
-        { names: drop(second, [...ids(), ...(apart ? (["variant"] as const) : [])]), extras: EXTRAS.filter((name) => !extras.includes(name) || dice.chance(0.5)) },
+        { names: drop(ours, ids()), extras, events: divided ? ["search"] : EVENTS },
+        {
+          names: drop(second, [...ids(), ...(apart ? (["variant"] as const) : [])]),
+          extras: EXTRAS.filter((name) => !extras.includes(name) || dice.chance(0.5)),
+          events: divided ? ["booking", "page"] : EVENTS,
+        },
       ];
     }
   }
@@ -108,18 +116,26 @@ function drawInstants(dice: Dice, anchor: bigint, followUpDays: number): bigint[
     ];
     instants.push(dice.pick(steps)());
   }
-  return instants;
+  if (wide || dice.chance(0.5)) return instants;
+  const end = dice.pick(instants) + BigInt(followUpDays) * DAY + dice.pick([-1n, 0n]);
+  return [...instants.filter((instant) => instant < end), end];
 }
 
 function drawPools(dice: Dice): Record<string, string[]> {
-  const numbers = () => [...dice.shuffled(NUMBERS).slice(0, 5), ...(dice.chance(0.3) ? dice.shuffled(EDGE_NUMBERS).slice(0, 3) : [])];
+  const numbers = () => [
+    ...dice.shuffled(NUMBERS).slice(0, 5),
+    ...(dice.chance(0.3) ? dice.shuffled(EDGE_NUMBERS).slice(0, 3) : []),
+  ];
   const texts = () => dice.shuffled(TEXTS).slice(0, dice.between(2, 5));
   return {
     fare: numbers(),
     seconds: numbers(),
-    country: texts(),
+    // By UTF-8 bytes ｚ precedes 😀, by UTF-16 it does not.
+    country: dice.chance(0.2) ? ["😀", "ｚ", "a"] : texts(),
     note: texts(),
-    is_staff: dice.shuffled(["true", "TRUE", "t", "Yes", "y", "1", "false", "F", "no", "n", "0", "1.0", "maybe"]).slice(0, 4),
+    is_staff: dice
+      .shuffled(["true", "TRUE", "t", "Yes", "y", "1", "false", "F", "no", "n", "0", "1.0", "maybe"])
+      .slice(0, 4),
     pages: [...numbers(), "many"],
   };
 }

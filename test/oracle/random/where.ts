@@ -12,7 +12,7 @@ export function drawWhere(dice: Dice, shape: Shape): { [column: string]: Piece }
 export function drawRowFilterWhere(dice: Dice, shape: Shape): { [column: string]: Piece } {
   const { names } = dice.pick(shape.sources);
   const special: { [column: string]: Piece }[] = [
-    { [names.unit]: { matches: dice.pick(["a*", "?", "*\n*", "*\"*"]) } },
+    { [names.unit]: { matches: dice.pick(["a*", "?", "*\n*", '*"*']) } },
     ...(names.event === null ? [] : [{ [names.event]: dice.pick(["page", "Booking"]) }]),
     ...(names.variant === null ? [] : [{ [names.variant]: dice.pick([...shape.variants, "zebra"]) }]),
   ];
@@ -22,14 +22,33 @@ export function drawRowFilterWhere(dice: Dice, shape: Shape): { [column: string]
 function drawTest(dice: Dice, column: string, pool: readonly string[]): Piece {
   // A number by value is one number however it is spelled: in a numeric column no test may tell 1 from 1.0.
   const numeric = NUMERIC_EXTRAS.includes(column);
-  const numbers = [...pool.filter((text) => /^-?\d+(\.\d+)?$/.test(text)).map(withoutZeros), "1", "2", "0.123456789"];
+  const numbers = [
+    ...pool.filter((text) => /^-?\d+(\.\d+)?$/.test(text)).map(withoutZeros),
+    "1",
+    "2",
+    "0.123456789",
+    ...(numeric ? [] : ["123456789012345679"]),
+  ];
   const scalars = (): Piece[] => {
     const asNumber = dice.pick(numbers).replace(/^\d+$/, (whole) => dice.pick([whole, `${whole}.0`, `${whole}.00`]));
-    const choices: Piece[] = [{ digits: asNumber }, ...(numeric ? [] : [dice.pick(pool), dice.pick(pool), true, false])];
+    const choices: Piece[] = [
+      { digits: asNumber },
+      ...(numeric ? [] : [dice.pick(pool), dice.pick(pool), true, false]),
+    ];
     return [dice.pick(choices)];
   };
   const threshold = (): Piece => ({ digits: dice.pick(numbers) });
-  const kind = dice.pick(["value", "value", "list", "in", "not", "one-sided", "two-sided", "missing", ...(numeric ? [] : ["matches", "matches"])]);
+  const kind = dice.pick([
+    "value",
+    "value",
+    "list",
+    "in",
+    "not",
+    "one-sided",
+    "two-sided",
+    "missing",
+    ...(numeric ? [] : ["matches", "matches"]),
+  ]);
   switch (kind) {
     case "list":
       return [...scalars(), ...scalars()];
@@ -66,6 +85,7 @@ function glob(dice: Dice, pool: readonly string[]): string {
     [...text.slice(0, at), "?", ...text.slice(at + 1)].join(""),
     `${whole}?`,
     `?${whole}`,
+    "?",
     "?",
     "*?*",
     `*${text[at] ?? ""}*`,

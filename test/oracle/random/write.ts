@@ -36,7 +36,10 @@ export function writeLog(dice: Dice, folder: string, sources: readonly RandomSou
     mkdirSync(join(folder, `log ${at}`), { recursive: true });
     split(dice, source, form).forEach((part, place) => {
       const text = fileText(dice, part, form);
-      const bytes = Buffer.from(form.byteOrderMark && form.format !== "ndjson" && text !== "" ? `\uFEFF${text}` : text, "utf8");
+      const bytes = Buffer.from(
+        form.byteOrderMark && form.format !== "ndjson" && text !== "" ? `\uFEFF${text}` : text,
+        "utf8",
+      );
       writeFileSync(join(folder, pattern.replace("*", String(place))), form.gz ? gzipSync(bytes) : bytes);
     });
     return pattern;
@@ -51,23 +54,36 @@ export function writeList(folder: string, list: RandomList): void {
 /** The rows dealt to files; columns stand in any order, and an empty file holds no row. */
 function split(dice: Dice, { columns, rows }: RandomSource, form: Form): RandomSource[] {
   const order = form.shuffled ? dice.shuffled(rows) : rows;
-  const files = Array.from({ length: form.files }, (_, at) => ({
-    columns: at === 0 ? columns : dice.shuffled(columns),
-    rows: order.filter((_, place) => place % form.files === at),
-  }));
+  const readable = order.filter((row) => row !== null);
+  const broken = order.filter((row) => row === null);
+  const files = Array.from({ length: Math.max(1, Math.min(form.files, readable.length)) }, (_, at) => {
+    const dealt = readable.filter((_, place) => place % form.files === at);
+    return {
+      columns: at === 0 ? columns : dice.shuffled(columns),
+      rows: at === 0 ? mixed(dice, dealt, broken) : dealt,
+    };
+  });
   return form.files > 1 && dice.chance(0.2) ? [...files, { columns: [], rows: [] }] : files;
+}
+
+function mixed(dice: Dice, rows: readonly RandomRow[], others: readonly RandomRow[]): RandomRow[] {
+  return others.reduce<RandomRow[]>((all, other) => all.toSpliced(dice.below(all.length + 1), 0, other), [...rows]);
 }
 
 function fileText(dice: Dice, source: RandomSource, form: Form): string {
   if (source.columns.length === 0) return "";
-  const lines = form.format === "ndjson" ? jsonLines(dice, source) : quotedLines(dice, source, form.format === "tsv" ? "\t" : ",");
+  const lines =
+    form.format === "ndjson" ? jsonLines(dice, source) : quotedLines(dice, source, form.format === "tsv" ? "\t" : ",");
   const blanks = lines.flatMap((line) => (dice.chance(0.03) ? [line, ""] : [line]));
   return blanks.join(form.lineEnd) + (dice.chance(0.8) ? form.lineEnd : "");
 }
 
 function quotedLines(dice: Dice, { columns, rows }: RandomSource, separator: string): string[] {
   const line = (row: RandomRow) => {
-    if (row === null) return Array(columns.length + dice.pick([-1, 1])).fill("zzz").join(separator);
+    if (row === null)
+      return Array(columns.length + dice.pick([-1, 1]))
+        .fill("zzz")
+        .join(separator);
     return columns.map((column) => cellText(dice, row[column] ?? null, separator)).join(separator);
   };
   return [columns.map((column) => cellText(dice, column, separator)).join(separator), ...rows.map(line)];
@@ -84,13 +100,16 @@ function quote(text: string, separator: string): string {
   return text.includes(separator) || /["\r\n]/.test(text) ? quoted(text) : text;
 }
 
+/** The first row that can be read writes every column, since a column must be in its file. */
 function jsonLines(dice: Dice, { columns, rows }: RandomSource): string[] {
-  return rows.map((row) => {
+  const first = rows.findIndex((row) => row !== null);
+  return rows.map((row, at) => {
     if (row === null) return dice.pick(['{"zzz": "z', "zzz"]);
     const pairs = columns.flatMap((column): [string, unknown][] => {
       const cell = row[column] ?? null;
       if (cell !== null) return [[column, jsonValue(dice, cell)]];
-      return dice.pick([[], [], [[column, null]], [[column, ""]]] as [string, unknown][][]);
+      const missing: [string, unknown][][] = [[[column, null]], [[column, ""]], ...(at === first ? [] : [[], []])];
+      return dice.pick(missing);
     });
     return JSON.stringify(Object.fromEntries(pairs));
   });

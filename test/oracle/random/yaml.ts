@@ -19,7 +19,9 @@ function flow(value: Piece): string {
   if (typeof value === "boolean") return String(value);
   if (isDigits(value)) return value.digits;
   if (isList(value)) return `[${value.map(flow).join(", ")}]`;
-  return `{${Object.entries(value).map(([key, item]) => `${scalar(key)}: ${flow(item)}`).join(", ")}}`;
+  return `{${Object.entries(value)
+    .map(([key, item]) => `${scalar(key)}: ${flow(item)}`)
+    .join(", ")}}`;
 }
 
 /** Words stand bare, all else in double quotes, where YAML reads what JSON does. */
