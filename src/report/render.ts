@@ -2,6 +2,7 @@ import { readFileSync } from "node:fs";
 import Handlebars from "handlebars";
 import type { Drawing } from "./charts/draw.ts";
 import type { Page } from "./page.ts";
+import { typeset } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
 const FOLDER = new URL("../../templates/", import.meta.url);
@@ -19,24 +20,7 @@ export function renderPage(page: Page): string {
     knownHelpers: { ownDrawingUnescaped: true },
     preventIndent: true,
   });
-  return render(withoutControls(page));
-}
-
-/**
- * Control characters and overrides of the writing direction, which a name could use to turn our figures around behind
- * it, become the replacement sign. The plan's text stays as it is: it is shown word for word, in a block of its own.
- */
-function withoutControls(page: Page): Page {
-  const { planText } = page.methods;
-  const clean = cleaned(page) as Page;
-  return { ...clean, methods: { ...clean.methods, planText } };
-}
-
-function cleaned(value: unknown): unknown {
-  if (typeof value === "string") return value.replace(/[^\P{Cc}\n\t]|[\u202a-\u202e\u2066-\u2069]/gu, "\ufffd");
-  if (Array.isArray(value)) return value.map(cleaned);
-  if (typeof value !== "object" || value === null) return value;
-  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, cleaned(item)]));
+  return render(typeset(page));
 }
 
 /** For drawings of charts/draw.ts only: they hold no text from a plan or a log except what that file escapes. */

@@ -234,3 +234,94 @@ function severalEffect(metric: Metric, m: number, variant: string, v: number): E
   const contrast = handContrast(pair[0], pair[1], metric.role === "secondary" ? undefined : z);
   return { ...effectOf(metric, variant, contrast, "not-settled"), ...placed(metric, contrast) };
 }
+
+const nobody = {
+  units: 0,
+  mean: null,
+  sd: null,
+  skewness: null,
+  kurtosis: null,
+  total: null,
+  smallest: null,
+  largest: null,
+} as const;
+const noDifference = { estimate: null, standardError: null, low: null, high: null, z: null, p: null } as const;
+
+/** As little as there can be: no time, no filter, no size, one visitor in one arm, nobody in the other; ends without limit. */
+export const little = inputs({
+  plan: {
+    ...farePlan,
+    enrolment: {
+      event: null,
+      fromUs: null,
+      beforeUs: null,
+      fromText: null,
+      beforeText: null,
+      inTwoVariants: "exclude",
+    },
+    followUp: null,
+    filters: [],
+    plannedUnits: null,
+    metrics: [booked, contacts, { ...fare, cap: null, worthwhile: null, role: "primary" }, perSearch],
+    texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
+  },
+  flow: { analysed: [1, 0], byFilter: [], followUp: [0, 0], notEnrolled: 0, outside: [0, 0], unknown: 0 },
+  checks: [],
+  effects: [
+    effectOf(
+      booked,
+      "calendar",
+      {
+        ...bookedContrast,
+        control: { ...nobody, units: 1, mean: 1, total: 1, smallest: 1, largest: 1 },
+        variant: nobody,
+        difference: { ...noDifference, method: "normal" },
+        relative: { absent: "no-units" },
+        why: { absent: "no-units" },
+      },
+      "not-settled",
+    ),
+    effectOf(
+      contacts,
+      "calendar",
+      {
+        ...contactsContrast,
+        difference: { ...contactsContrast.difference, method: "welch", low: null },
+        relative: { estimate: -0.012, low: null, high: 0.039 },
+        df: 17.3,
+        beside: [{ method: "normal", low: -0.0051, high: 0.0031 }],
+      },
+      "within",
+    ),
+    effectOf(
+      fare,
+      "calendar",
+      {
+        ...fareContrast,
+        difference: { ...noDifference, estimate: 7.5, method: "normal" },
+        relative: { absent: "few-units" },
+        why: { absent: "few-units" },
+      },
+      "not-settled",
+    ),
+    effectOf(
+      perSearch,
+      "calendar",
+      {
+        ...fareContrast,
+        control: nobody,
+        variant: nobody,
+        difference: { ...noDifference, method: "normal" },
+        relative: { absent: "zero-denominator" },
+        why: { absent: "zero-denominator" },
+      },
+      "not-settled",
+    ),
+  ],
+  conclusion: {
+    decision: "not-settled",
+    variant: null,
+    sentence: 'Not settled: this test can neither recommend "calendar" nor advise against it.',
+    reasons: [],
+  },
+});

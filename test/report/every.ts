@@ -1,5 +1,5 @@
 import type { ReportInputs } from "../../src/report/types.ts";
-import { adopt, keepControl, notSettled, several, undecidable } from "./cases.ts";
+import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { hostile } from "./hostile.ts";
 
 /** Every hand-made report, by name. */
@@ -9,5 +9,6 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["keep the control", keepControl],
   ["undecidable", undecidable],
   ["several variants", several],
+  ["as little as there can be", little],
   ["hostile", hostile],
 ];

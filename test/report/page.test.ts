@@ -96,7 +96,7 @@ describe("the page", () => {
     const page = textOf(sectionOf((await renderReport(adopt)).html, "decision"));
     const order = [
       "Adopt the calendar.",
-      'Booked: 13.2 of 100 visitors with "calendar" and 12.0 with "list", 10.0% more (95% interval: 6.5% to 13.7% more).',
+      "Booked: 13.2 of 100 visitors with \u201ccalendar\u201d and 12.0 with \u201clist\u201d, 10.0% more (95% interval: 6.5% to 13.7% more).",
       "Asked for: at least 5% more.",
       "Must not get worse: Support contacts, limit 5% more.",
       "12.0% \u2192 13.2%",
@@ -134,7 +134,8 @@ describe("the page", () => {
 
   it("gives every ledger line with its count, and the counts of report.json", async () => {
     const { html, json } = await renderReport(several);
-    const counted = textOf(sectionOf(html, "counted"));
+    // the page has curly quotes where report.json has straight ones
+    const counted = textOf(sectionOf(html, "counted")).replace(/[\u201c\u201d]/g, '"');
     for (const { line, rows } of json.flow.rows) expect(counted).toContain(`${line} ${rows.toLocaleString("en-US")}`);
     for (const { id, line, units, byVariant } of json.flow.units) {
       const cells = Object.values(byVariant ?? {}).map((n) => n.toLocaleString("en-US"));

@@ -121,11 +121,9 @@ function readingText(plan: Plan, effects: readonly Effect[], beyond: boolean): s
   const variants = plan.variants.length - 1;
   const ofAmount = (kind: Amount["kind"]) => effects.some((effect) => ruleOf(metricOf(effect, plan))?.kind === kind);
   return [
-    `Thin line: ${planPercent(plan.decision.confidence)} interval; square: estimate; long upright: no difference; short upright: what the plan asked for, or its limit.`,
+    `Thin line: ${planPercent(plan.decision.confidence)} interval. Square: estimate. Long upright: no difference. Short upright: what was asked for, or the limit.`,
     ...(ofAmount("absolute")
-      ? [
-          `Where the plan states an amount in the measure\u2019s own unit, line and uprights stand at shares of the level with ${control}.`,
-        ]
+      ? [`An amount in a measure\u2019s own unit, and its interval, stand at their share of the level with ${control}.`]
       : []),
     ...(variants > 1
       ? [`Intervals of what decides or must not get worse hold for all ${variants} variants together.`]

@@ -1,0 +1,25 @@
+import { describe, expect, it } from "vitest";
+import { quotes, unbroken, withoutControls } from "../../src/report/typeset.ts";
+
+describe("a text of the page", () => {
+  it("has curly quotes around each name", () => {
+    expect(quotes('13.2 with "calendar" and 12.0 with "list"')).toBe(
+      "13.2 with \u201ccalendar\u201d and 12.0 with \u201clist\u201d",
+    );
+    expect(quotes('a lone " stays')).toBe('a lone " stays');
+  });
+
+  it("does not break inside a p-value or before the word interval", () => {
+    expect(unbroken("as uneven (p < 0.0001), or p = 0.03, on 1 map = 2")).toBe(
+      "as uneven (p\u00a0<\u00a00.0001), or p\u00a0=\u00a00.03, on 1 map = 2",
+    );
+    expect(unbroken("(95% interval: 1% to 2%)")).toBe("(95%\u00a0interval: 1% to 2%)");
+  });
+
+  it("shows a control character or an override of the writing direction as a sign, and keeps accents and Hebrew", () => {
+    expect(withoutControls("a\u0000b\u001bc\u0085d\u202ee\u2067f")).toBe("a\ufffdb\ufffdc\ufffdd\ufffde\ufffdf");
+    expect(withoutControls("Bes\u00f8k \u05d1\u05d3\u05d9\u05e7\u05d4\u200f e\u0301\n\t")).toBe(
+      "Bes\u00f8k \u05d1\u05d3\u05d9\u05e7\u05d4\u200f e\u0301\n\t",
+    );
+  });
+});
