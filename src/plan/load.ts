@@ -1,6 +1,7 @@
 import { buildPlan } from "./build.ts";
 import { columnMentions } from "./columns.ts";
 import { ruleProblems } from "./rules/index.ts";
+import { LATER, type Later, laterProblems } from "./rules/later.ts";
 import { items, type Loose, mapping } from "./rules/loose.ts";
 import { planSchema } from "./schema.ts";
 import { correctKeys, shapeProblems } from "./shape.ts";
@@ -15,8 +16,10 @@ export type LoadedPlan =
 /**
  * Reads a plan. Either the plan, checked and with its defaults, or everything that is wrong with it; in both cases the
  * source, which places problems in the text and names the files of the log as far as they can be read.
+ *
+ * @param options.later what is refused as not built yet; another list than the program's is for tests
  */
-export function loadPlan(text: string): LoadedPlan {
+export function loadPlan(text: string, { later = LATER }: { readonly later?: readonly Later[] } = {}): LoadedPlan {
   const { yaml, problems, isBroken } = readYaml(text);
   if (isBroken) return { problems, source: { yaml, mentions: [], log: [], lists: [] } };
 
@@ -28,7 +31,7 @@ export function loadPlan(text: string): LoadedPlan {
 
   const read = [...problems, ...misspelt, ...faults];
   const told = new Set(faults.filter(({ at }) => at === "value").map(({ path }) => JSON.stringify(path)));
-  const checked = [...shapeProblems(plan, yaml), ...ruleProblems(plan, yaml)];
+  const checked = [...shapeProblems(plan, yaml), ...ruleProblems(plan, yaml), ...laterProblems(plan, later)];
   const all = [...read, ...checked.filter(({ path }) => !told.has(JSON.stringify(path)))];
   if (all.length > 0) return { problems: all, source };
   return { plan: buildPlan(planSchema.parse(plan), source), source };

@@ -61,19 +61,6 @@ plan.yaml:1:1
   });
 });
 
-it("names of the whole plan format what is not built yet, and nothing else", () => {
-  const text = readFileSync(new URL("fixtures/whole-format.yaml", import.meta.url), "utf8");
-  const loaded = loadPlan(text);
-  expect("problems" in loaded ? loaded.problems.map(({ path, message }) => [path.join(" "), message]) : []).toEqual([
-    [
-      "metrics 3 summary",
-      "summary: quantile is not built yet. Take mean, proportion or ratio-of-totals, or remove the metric.",
-    ],
-    ["metrics 1 adjust-for", "adjust-for is not built yet. Remove it."],
-    ["subgroups", "subgroups is not built yet. Remove it."],
-  ]);
-});
-
 it("has an answer to any text: a plan, or places that lie in the text", () => {
   const texts = ["fare-calendar.yaml", "whole-format.yaml"].map((name) =>
     readFileSync(new URL(`fixtures/${name}`, import.meta.url), "utf8"),

@@ -11,12 +11,22 @@ const editor = z.fromJSONSchema(JSON.parse(JSON.stringify(schema)));
 const accepts = (text: string) => editor.safeParse(parse(text)).success;
 const fixture = (name: string) => readFileSync(new URL(`fixtures/${name}`, import.meta.url), "utf8");
 
+const metric = (key: string) => `metrics: [{name: B, role: primary, summary: mean, of: {sum: x}, ${key}}]`;
+
 describe("the plan's JSON Schema", () => {
   it("takes the whole format and the smallest plan", () => {
     expect(accepts(fixture("whole-format.yaml"))).toBe(true);
     expect(accepts(fixture("fare-calendar.yaml"))).toBe(true);
     expect(accepts(planText())).toBe(true);
   });
+
+  it.each([
+    { forecast: "forecast: {units-per-month: 30000}" },
+    { decision: "decision: {primaries: any, interval: skew-corrected}" },
+    { metrics: metric("adjust-for: {days-before: 0.5}") },
+    { metrics: metric("adjust-for: {column: past_fares}") },
+    { metrics: metric("quantile: 95%") }, // which summary has it is beyond an editor
+  ])("takes %j", (sections) => expect(accepts(planText(sections))).toBe(true));
 
   it.each([
     ["an unknown key", { x: "loks: 3" }],
@@ -28,6 +38,12 @@ describe("the plan's JSON Schema", () => {
     ["a confidence of 95", { decision: "decision: {confidence: 95}" }],
     ["an empty where", { filters: "filters: [{name: f, drop: rows, where: {}}]" }],
     ["two amounts", { metrics: "metrics: [{name: B, summary: mean, of: {}, margin: {relative: 0.1, absolute: 1}}]" }],
+    ["a forecast of no units", { forecast: "forecast: {units-per-month: 0}" }],
+    ["a forecast of half a unit", { forecast: "forecast: {units-per-month: 0.5}" }],
+    ["two covariates in one", { metrics: metric("adjust-for: {days-before: 7, column: past}") }],
+    ["no days before", { metrics: metric("adjust-for: {days-before: 0}") }],
+    ["a quantile of 95", { metrics: metric("quantile: 95") }],
+    ["a word that the interval is not", { decision: "decision: {interval: exact}" }],
     ["an empty text", { owner: "owner: ''" }],
   ])("refuses %s", (_, sections) => expect(accepts(planText(sections))).toBe(false));
 

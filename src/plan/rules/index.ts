@@ -3,7 +3,6 @@ import type { YamlText } from "../yaml.ts";
 import { enrolmentRules } from "./enrolment.ts";
 import { exactRules } from "./exact.ts";
 import { filterRules } from "./filters.ts";
-import { laterRules } from "./later.ts";
 import { logRules } from "./log.ts";
 import type { Loose } from "./loose.ts";
 import { metricRules } from "./metrics.ts";
@@ -19,7 +18,6 @@ const RULES: readonly ((plan: Loose, yaml: YamlText) => readonly Problem[])[] = 
   exactRules,
   filterRules,
   nameRules,
-  laterRules,
 ];
 
 export function ruleProblems(plan: Loose, yaml: YamlText): readonly Problem[] {

@@ -1,34 +1,45 @@
+import { dataAt } from "../schema-walk.ts";
 import type { Problem } from "../types.ts";
 import type { Path } from "../yaml.ts";
-import { items, type Loose, mapping } from "./loose.ts";
+import { items, type Loose } from "./loose.ts";
 
-/** What the plan's format knows and this version does not compute. */
-export function laterRules(plan: Loose): readonly Problem[] {
-  const decision = mapping(plan.decision) ?? {};
-  const metrics = items(plan, "metrics");
-  const quantiles = metrics.filter(({ data }) => data.summary === "quantile");
-  const adjusted = metrics.filter(({ data }) => "adjust-for" in data);
-  return [
-    ...quantiles.map(({ path }) =>
-      notBuilt(
-        [...path, "summary"],
-        "value",
-        "summary: quantile",
-        "Take mean, proportion or ratio-of-totals, or remove the metric.",
-      ),
-    ),
-    ...adjusted.map(({ path }) => notBuilt([...path, "adjust-for"], "key", "adjust-for", "Remove it.")),
-    ...("subgroups" in plan ? [notBuilt(["subgroups"], "key", "subgroups", "Remove it.")] : []),
-    ...("forecast" in plan ? [notBuilt(["forecast"], "key", "forecast", "Remove it.")] : []),
-    ...(decision.primaries === "any"
-      ? [notBuilt(["decision", "primaries"], "value", "primaries: any", "Write all, or remove the key.")]
-      : []),
-    ...(decision.interval === "skew-corrected"
-      ? [notBuilt(["decision", "interval"], "value", "interval: skew-corrected", "Write normal, or remove the key.")]
-      : []),
-  ];
+/** Something that the plan's format knows and this version does not compute. */
+export interface Later {
+  /** Of one metric the path inside it, else the path in the plan. */
+  readonly of: "plan" | "metric";
+  readonly path: Path;
+  /** The value that is not built; without it the key as a whole. */
+  readonly value?: string;
+  readonly remedy: string;
 }
 
-function notBuilt(path: Path, at: "key" | "value", what: string, remedy: string): Problem {
-  return { path, at, message: `${what} is not built yet. ${remedy}` };
+/** One line a feature; it goes when the feature comes. */
+export const LATER: readonly Later[] = [
+  {
+    of: "metric",
+    path: ["summary"],
+    value: "quantile",
+    remedy: "Take mean, proportion or ratio-of-totals, or remove the metric.",
+  },
+  { of: "metric", path: ["adjust-for"], remedy: "Remove it." },
+  { of: "plan", path: ["decision", "primaries"], value: "any", remedy: "Write all, or remove the key." },
+  { of: "plan", path: ["decision", "interval"], value: "skew-corrected", remedy: "Write normal, or remove the key." },
+  { of: "plan", path: ["forecast"], remedy: "Remove it." },
+];
+
+/** Apart from the list, for `Plan` has no field for them: without this they would go unseen. */
+const SUBGROUPS: Later = { of: "plan", path: ["subgroups"], remedy: "Remove it." };
+
+export function laterProblems(plan: Loose, later: readonly Later[]): readonly Problem[] {
+  return [...later, SUBGROUPS].flatMap(({ of, path, value, remedy }) => {
+    const places = of === "metric" ? items(plan, "metrics").map((metric) => [...metric.path, ...path]) : [path];
+    const key = String(path.at(-1));
+    return places
+      .filter((place) => (value === undefined ? dataAt(plan, place) !== undefined : dataAt(plan, place) === value))
+      .map((place): Problem => {
+        const what = value === undefined ? key : `${key}: ${value}`;
+        const message = `${what} is not built yet. ${remedy}`;
+        return { path: place, at: value === undefined ? "key" : "value", message };
+      });
+  });
 }

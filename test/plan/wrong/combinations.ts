@@ -128,36 +128,23 @@ export const COMBINATIONS: readonly WrongPlan[] = [
     ],
   },
   {
-    title: "what is not built yet, with what else is wrong about it",
+    title: "days before enrolment in a log without time, beside what needs none",
     plan: {
+      log: "log: [{files: a.csv, columns: {unit: visitor, event: event, variant: arm}}]",
       metrics: `metrics:
-  - name: Booked
-    role: primary
-    summary: proportion
-    of: {event: booking}
-    «adjust-for»: {days-before: «-1»}
-  - name: Time
-    summary: «quantile»
-    quantile: «95»
-    of: {event: page, max: seconds}
-    without-rows: leave-out`,
-      subgroups: "«subgroups»: [country]",
-      decision: "decision: {primaries: «any», interval: «skew-corrected»}",
-      forecast: "«forecast»: {units-per-month: «0»}",
+  - {name: A, role: primary, summary: proportion, of: {event: b}, adjust-for: {«days-before»: 14}}
+  - {name: B, summary: mean, of: {sum: x}, adjust-for: {column: past}}`,
     },
     says: [
-      ["metrics, Booked", "adjust-for is not built yet. Remove it."],
-      ["metrics, Booked", "Expected a number of days above 0 and up to 36,500."],
       [
-        "metrics, Time",
-        "summary: quantile is not built yet. Take mean, proportion or ratio-of-totals, or remove the metric.",
+        "metrics, A",
+        "days-before needs time, and the log has none. Add time to the columns of the log, or remove this.",
       ],
-      ["metrics, Time", "Expected a number between 0 and 1. For 95% write 0.95."],
-      ["", "subgroups is not built yet. Remove it."],
-      ["decision", "primaries: any is not built yet. Write all, or remove the key."],
-      ["decision", "interval: skew-corrected is not built yet. Write normal, or remove the key."],
-      ["", "forecast is not built yet. Remove it."],
-      ["forecast", "Expected a whole number above 0."],
     ],
+  },
+  {
+    title: "subgroups, which a plan cannot hold yet",
+    plan: { subgroups: "«subgroups»: [country]" },
+    says: [["", "subgroups is not built yet. Remove it."]],
   },
 ];

@@ -106,7 +106,7 @@ export const METRICS: readonly WrongPlan[] = [
     plan: {
       metrics: `metrics:
   - {name: Booked, role: primary, summary: proportion, of: {event: booking}, «quantile»: 0.5}
-  - {name: «Time», summary: «quantile», of: {sum: seconds}}`,
+  - {name: «Time», summary: quantile, of: {sum: seconds}}`,
     },
     says: [
       [
@@ -114,10 +114,97 @@ export const METRICS: readonly WrongPlan[] = [
         "quantile is for summary: quantile; this one is proportion. Remove it, or change the summary.",
       ],
       ["metrics, Time", "summary: quantile needs quantile. Add which one, such as quantile: 0.95."],
+    ],
+  },
+  {
+    title: "what a quantile does not know",
+    plan: metric(`name: Time
+    summary: quantile
+    quantile: 0.95
+    of: {event: page, sum: seconds, «days»: true}
+    «per»: {event: page}
+    «cap»: {quantile: 0.999}
+    «adjust-for»: {days-before: 7}`),
+    says: [
+      ["metrics, Time", "One figure is taken of the rows, and sum stands here already. Remove one of them."],
+      ["metrics, Time", "per is for summary: ratio-of-totals; this one is quantile. Remove it, or change the summary."],
       [
         "metrics, Time",
-        "summary: quantile is not built yet. Take mean, proportion or ratio-of-totals, or remove the metric.",
+        "A cap changes nothing that a quantile looks at. Remove it; it is for means and ratios of totals.",
       ],
+      ["metrics, Time", "adjust-for is for means and proportions, this summary is quantile. Remove it."],
+    ],
+  },
+  {
+    title: "a quantile of a figure that a unit without rows does not have",
+    plan: metric("{name: Time, summary: quantile, quantile: 95%, of: {«max»: seconds}}"),
+    says: [
+      [
+        "metrics, Time",
+        "A unit without rows has no max. Say what becomes of it: add without-rows: leave-out, or without-rows: 0.",
+      ],
+    ],
+  },
+  {
+    title: "quantiles that are none",
+    plan: {
+      metrics: `metrics:
+  - {name: A, role: primary, summary: quantile, quantile: «95», of: {sum: x}}
+  - {name: B, summary: quantile, quantile: «0», of: {sum: x}}
+  - {name: C, summary: quantile, quantile: «1», of: {sum: x}}
+  - {name: D, summary: quantile, quantile: «100%», of: {sum: x}}
+  - {name: E, summary: quantile, quantile: «-5%», of: {sum: x}}
+  - {name: F, summary: quantile, quantile: «median», of: {sum: x}}
+  - {name: G, summary: quantile, quantile: «"0.95"», of: {sum: x}}
+  - {name: H, summary: quantile, quantile: «1e-400», of: {sum: x}}`,
+    },
+    says: [
+      ["metrics, A", "Expected a number between 0 and 1. For 95% write 0.95."],
+      ["metrics, B", "Expected a number between 0 and 1."],
+      ["metrics, C", "Expected a number between 0 and 1."],
+      ["metrics, D", "Expected a number between 0 and 1."],
+      ["metrics, E", "Expected a number between 0 and 1."],
+      ["metrics, F", "Expected a number between 0 and 1."],
+      ["metrics, G", "Expected a number between 0 and 1. Write it without quotes."],
+      ["metrics, H", "Expected a number between 0 and 1."],
+    ],
+  },
+  {
+    title: "a covariate where there is none, and one that is two or none",
+    plan: {
+      metrics: `metrics:
+  - {name: A, role: primary, summary: mean, of: {sum: x}, adjust-for: {days-before: 7, column: «past»}}
+  - {name: B, summary: proportion, of: {event: b}, adjust-for: «{}»}
+  - {name: C, summary: ratio-of-totals, of: {sum: x}, per: {event: b}, «adjust-for»: {column: past}}
+  - {name: D, summary: mean, of: {sum: x}, adjust-for: «past»}
+  - {name: E, summary: mean, of: {sum: x}, adjust-for: {column: «7»}}`,
+    },
+    says: [
+      ["metrics, A", "Only one of days-before and column can hold. Remove one."],
+      ["metrics, B", "Expected days-before or column."],
+      ["metrics, C", "adjust-for is for means and proportions, this summary is ratio-of-totals. Remove it."],
+      ["metrics, D", "Expected {days-before: 14} or {column: past_fares}."],
+      ["metrics, E", 'Expected text. Put it in quotes: "7".'],
+    ],
+  },
+  {
+    title: "days before enrolment that cannot be counted",
+    plan: {
+      metrics: `metrics:
+  - {name: A, role: primary, summary: mean, of: {sum: x}, adjust-for: {days-before: «0»}}
+  - {name: B, summary: mean, of: {sum: x}, adjust-for: {days-before: «-7»}}
+  - {name: C, summary: mean, of: {sum: x}, adjust-for: {days-before: «0.3333333333333333»}}
+  - {name: D, summary: mean, of: {sum: x}, adjust-for: {days-before: «36501»}}
+  - {name: E, summary: mean, adjust-for: {days-before: «a week»}, of: {sum: x}}
+  - {name: «F», summary: mean, adjust-for: {days-before: 7}}`,
+    },
+    says: [
+      ["metrics, A", "Expected a number of days above 0 and up to 36,500."],
+      ["metrics, B", "Expected a number of days above 0 and up to 36,500."],
+      ["metrics, C", "Expected a number of days that is a whole number of microseconds. Write fewer decimals."],
+      ["metrics, D", "Expected a number of days above 0 and up to 36,500."],
+      ["metrics, E", "Expected a number of days above 0 and up to 36,500."],
+      ["metrics, F", "Missing key: of. What is taken of a unit's rows."],
     ],
   },
   {

@@ -248,4 +248,38 @@ export const VALUES: readonly WrongPlan[] = [
       ["filters, b", "Expected a mapping of columns and what they must hold."],
     ],
   },
+  {
+    title: "words of the decision that it does not know",
+    plan: { decision: "decision: {primaries: «some», interval: «skew_corrected»}" },
+    says: [
+      ["decision", "Expected all or any."],
+      ["decision", "Expected normal or skew-corrected. Did you mean skew-corrected?"],
+    ],
+  },
+  ...(
+    [
+      ["{units-per-month: «0»}", ""],
+      ["{units-per-month: «-5»}", ""],
+      ["{units-per-month: «0.5»}", ""],
+      ["{units-per-month: «many»}", ""],
+      ['{units-per-month: «"30,000"»}', " Write 30000, without separators."],
+      ["{«units-per-month»: }", " Nothing is written here: fill it in, or remove the key."],
+    ] as const
+  ).map(([forecast, remedy]): WrongPlan => {
+    const says = [["forecast", `Expected a whole number above 0.${remedy}`]] as const;
+    return { title: `a forecast of ${forecast}`, plan: { forecast: `forecast: ${forecast}` }, says };
+  }),
+  {
+    title: "a forecast that says not of what",
+    plan: { forecast: "forecast: «30000»" },
+    says: [["", "Expected a mapping with the key units-per-month."]],
+  },
+  {
+    title: "a forecast of something else",
+    plan: { forecast: "«forecast»: {«units»: 30000}" },
+    says: [
+      ["", "Missing key: units-per-month. How many units will enrol in a month, all variants together."],
+      ["forecast", "Unknown key. Known here: units-per-month."],
+    ],
+  },
 ];
