@@ -15,8 +15,7 @@ export function tTwoSided(t: number, df: number): number {
   if (df === 1) return (2 / Math.PI) * Math.atan2(1, Math.abs(t));
   const square = t * t;
   if (square < df) return betainc(square / (df + square), 0.5, df / 2, true, true);
-  // df / (df + square) would be 0 / 0's neighbour for a square that overflows: the tail is then 0.
-  return square === Infinity ? 0 : betainc(df / (df + square), df / 2, 0.5, true, false);
+  return betainc(df / (df + square), df / 2, 0.5, true, false);
 }
 
 /**

@@ -178,6 +178,10 @@ describe("the figures of an arm", () => {
     expectWithin(kurtosis, 0.25, 1e-15);
   });
 
+  it("of a proportion of a half have a skewness of exactly 0: counts do not round", () => {
+    expect(armFigures(shareArm(25, 50)).skewness).toBe(0);
+  });
+
   it("have no spread at 0 of n, n of n and for one unit", () => {
     for (const arm of [shareArm(0, 9), shareArm(9, 9), shareArm(1, 1), meanArm([4]), meanArm([4, 4, 4])]) {
       expect(armFigures(arm)).toMatchObject({ sd: null, skewness: null, kurtosis: null });

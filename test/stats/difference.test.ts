@@ -2,6 +2,7 @@ import { describe, expect, it } from "vitest";
 import { difference } from "../../src/stats/difference.ts";
 import { bonferroniCritical, bonferroniP } from "../../src/stats/index.ts";
 import { tCritical } from "../../src/stats/student-t.ts";
+import type { Level } from "../../src/stats/types.ts";
 import { welch } from "../../src/stats/welch.ts";
 import { expectPrinted, expectWithin, present } from "./expect.ts";
 import { levelFrom, levelOf, range } from "./levels.ts";
@@ -38,6 +39,10 @@ describe("the difference of two means", () => {
       expect(method(levelOf([3]), levelOf([1, 2]), 0.05)).toEqual({ absent: "few-units" });
       expect(method(levelOf([1, 2]), levelOf([3]), 0.05)).toEqual({ absent: "few-units" });
       expect(method(levelOf([1, 1]), levelOf([2, 2, 2]), 0.05)).toEqual({ absent: "zero-variance" });
+      const lost: Level = { ...levelOf([1, 2]), variance: { absent: "lost-digits" } };
+      expect(method(lost, levelOf([1, 2]), 0.05)).toEqual({ absent: "lost-digits" });
+      expect(method(levelOf([3]), lost, 0.05)).toEqual({ absent: "few-units" });
+      expect(method(lost, levelOf([3]), 0.05)).toEqual({ absent: "few-units" });
     }
   });
 });

@@ -70,6 +70,13 @@ const values = fc.oneof(
   fc.array(decimal, { minLength: 1, maxLength: 40 }),
   fc.array(close, { minLength: 1, maxLength: 40 }),
   fc.tuple(close, fc.integer({ min: 1, max: 40 })).map(([value, n]) => Array<number>(n).fill(value)),
+  // An outlier makes every other u small; a small negative u is where a term of its own kind of rounding comes in.
+  fc
+    .tuple(
+      fc.array(fc.integer({ min: -50, max: 50 }), { minLength: 5, maxLength: 40 }),
+      fc.constantFrom(1e5, 1e7, -1e9),
+    )
+    .map(([xs, outlier]) => [...xs, outlier]),
 );
 
 const ONE = 2n ** 120n;
@@ -122,10 +129,17 @@ describe("what rounding can do", () => {
     expect(moments(sumsOf([1, 1.000000001, 1.000000002])).variance).toBeCloseTo(1e-18, 30);
   });
 
+  it("does not take a spread that is real: 2e-8 of the distance from the pivot", () => {
+    // u is about 0.5 here and rounds by 2^-54: m2 is 5e-16, some four times the bound, and known to a tenth or so.
+    const far = Array.from({ length: 10 }, (_, i) => 0.5 + (i % 2 === 0 ? 22e-9 : -22e-9));
+    const [, arm] = sumsTogether([Array.from({ length: 1000 }, (_, i) => (i % 2 === 0 ? 1 : -1)), far]);
+    expectWithin(moments(arm as PowerSums).variance, (22e-9 ** 2 * 10) / 9, 0.3);
+  });
+
   it("counts noise in the values themselves", () => {
-    const sums = sumsOf([1, 1.0001, 0.9999, 1]);
-    expect(moments(sums, 1e-9).variance).toBe(moments(sums).variance);
-    expect(moments(sums, 1e-4).variance).toBeNull();
+    const sums = sumsOf([1, 1.0001, 0.9999, 1]); // m2 = 5e-9: a sd of 7.1e-5
+    expect(moments(sums, 1e-5).variance).toBe(moments(sums).variance);
+    expect(moments(sums, 5e-5).variance).toBeNull();
   });
 
   it("leaves a symmetric arm without a skewness rather than with a skewness of 0", () => {

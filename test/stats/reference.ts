@@ -23,6 +23,20 @@ export const exactMoments = () =>
     }[]
   >("moments.json");
 
+/** mpmath 1.3.0: ends of Fieller and MOVER intervals where the textbook formulas cancel. */
+export const relativeEnds = () =>
+  read<{
+    fieller: {
+      control: number;
+      variant: number;
+      halfControl: number;
+      halfVariant: number;
+      low: string;
+      high: string;
+    }[];
+    mover: { control: [number, number]; variant: [number, number]; z: number; low: string; high: string }[];
+  }>("relative.json");
+
 /** NIST Statistical Reference Datasets, univariate. */
 export const nist = () =>
   read<{ sets: { name: string; mean: string; sd: string; values?: number[]; digits?: string }[] }>("nist.json").sets;
