@@ -88,7 +88,7 @@ export function bareText({ estimate, low, high }: Interval, metric: Metric, mark
 
 /** The unit once, behind the estimate: "+9.6 kr" and "+5.1 to +14.2". */
 function withUnit({ estimate, interval }: Signed, metric: Metric): Signed {
-  return { estimate: `${estimate} ${unitText(metric)}`.trimEnd(), interval };
+  return estimate === NONE ? NO_INTERVAL : { estimate: `${estimate} ${unitText(metric)}`.trimEnd(), interval };
 }
 
 /** The unit of a metric's differences in a narrow cell; "points" are percentage points. */

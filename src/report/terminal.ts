@@ -1,6 +1,6 @@
 import type { Effect } from "../decision/index.ts";
 import type { Plan } from "../plan/types.ts";
-import { count, planPercent } from "../words/index.ts";
+import { count, planPercent, plural } from "../words/index.ts";
 import { effectText, verdictText } from "./effect-text.ts";
 import { controlOf } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
@@ -26,7 +26,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
     ...labelled("Data", data?.answer ?? ""),
     ...labelled(
       "Counted",
-      `${count(counted)} of ${count(reduction.unitsSeen)} ${plan.unitCalled.many}; all ${count(reduction.rowsRead)} rows accounted for`,
+      `${count(counted)} of ${plural(reduction.unitsSeen, plan.unitCalled.one, plan.unitCalled.many)}; all ${count(reduction.rowsRead)} rows accounted for`,
     ),
     ...labelled("Report", paths.report),
     ...labelled("To paste", paths.summary),

@@ -3,7 +3,7 @@ import { capital, list, MINUS, number, plural } from "../../words/index.ts";
 
 /** Section 3: can the data be trusted? Failed checks first, then cautions, the strong ones before the others. */
 export interface ChecksSection {
-  readonly tally: string;
+  readonly intro: string;
   readonly open: readonly CheckText[];
   readonly passed: readonly CheckText[];
 }
@@ -47,7 +47,7 @@ const RANK = (check: Check) => (check.result === "fail" ? 0 : check.strong ? 1 :
 export function checksSection(checks: readonly Check[]): ChecksSection {
   const ordered = checks.toSorted((a, b) => RANK(a) - RANK(b));
   return {
-    tally: tallyText(checks),
+    intro: `${tallyText(checks)}.${checks.length === 0 ? "" : " These are tests of the data, not of the effect."}`,
     open: ordered.filter((check) => check.result !== "pass").map(checkText),
     passed: ordered.filter((check) => check.result === "pass").map(checkText),
   };

@@ -7,7 +7,7 @@ import {
   nextSentences,
 } from "../../decision/index.ts";
 import type { Plan } from "../../plan/types.ts";
-import { count, list } from "../../words/index.ts";
+import { count, list, plural } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
 import { mostImportant, tallyText } from "./checks.ts";
 import { type ForestTable, forestTable } from "./forest.ts";
@@ -105,7 +105,10 @@ function trustText({ checks, conclusion }: ReportInputs): string {
 function countedText({ plan, reduction }: ReportInputs): string {
   const counted = reduction.unitLines.find((line) => line.id === "analysed")?.units ?? 0;
   const left = reduction.unitsSeen - counted;
-  const { many } = plan.unitCalled;
-  const rest = left === 0 ? "None was left out." : `The other ${count(left)} are listed by reason in section 4.`;
-  return `${count(counted)} of ${count(reduction.unitsSeen)} ${many}. ${rest}`;
+  const { one, many } = plan.unitCalled;
+  const rest =
+    left === 0
+      ? "None was left out."
+      : `The other ${count(left)} ${left === 1 ? "is" : "are"} listed by reason in section 4.`;
+  return `${count(counted)} of ${plural(reduction.unitsSeen, one, many)}. ${rest}`;
 }
