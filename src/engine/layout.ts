@@ -16,6 +16,8 @@ export interface Layout {
    * of the log where it is so; it need not be stored twice. Else null.
    */
   readonly standIns: readonly (StandIn | null)[];
+  /** Columns whose value at enrolment is a covariate. */
+  readonly covariateColumns: readonly number[];
   readonly hasTime: boolean;
   readonly hasEventId: boolean;
   /** Distinct conditions of metric parts (m<i>). */
@@ -34,7 +36,8 @@ export interface StandIn {
 
 export interface PartLayout {
   readonly metric: number;
-  readonly side: "of" | "per";
+  /** The metric's quantity, a ratio's denominator, or the quantity in the days before enrolment (a covariate). */
+  readonly side: "of" | "per" | "before";
   readonly match: number;
   readonly part: Part;
   /** Index into `columns` of the value, null for count and days. */
@@ -50,6 +53,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
   const parts = plan.metrics.flatMap((metric, index) => [
     { metric: index, side: "of" as const, part: metric.of },
     ...(metric.per === null ? [] : [{ metric: index, side: "per" as const, part: metric.per }]),
+    ...(metric.adjustFor?.kind === "days-before" ? [{ metric: index, side: "before" as const, part: metric.of }] : []),
   ]);
   const conditions = [
     ...parts.map(({ part }) => part.where),
@@ -72,6 +76,13 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
     columns,
     ordered: plan.columns.length,
     numeric: columns.map((column) => plan.numericColumns.includes(column)),
+    covariateColumns: [
+      ...new Set(
+        plan.metrics.flatMap((metric) =>
+          metric.adjustFor?.kind === "column" ? [columns.indexOf(metric.adjustFor.column)] : [],
+        ),
+      ),
+    ],
     standIns: columns.map((column) => (plan.numericColumns.includes(column) ? null : standIn(plan, groups, column))),
     hasTime: plan.log.every((source) => source.columns.time !== null),
     hasEventId: plan.log.some((source) => source.columns.eventId !== null),

@@ -29,11 +29,11 @@ export async function metricCells(
   engine: Engine,
   dialect: Dialect,
 ): Promise<MetricCells[]> {
-  const raw = layout.parts.map((_, p) => name(`x${p}`));
+  const raw = layout.parts.map((part, p) => (part.side === "before" ? name(`z${part.metric}`) : name(`x${p}`)));
   const caps = await Promise.all(
     layout.parts.map((part, p) => {
       const metric = plan.metrics[part.metric];
-      return metric === undefined || part.side === "per" ? null : capValue(metric, name(`x${p}`), engine);
+      return metric === undefined || part.side !== "of" ? null : capValue(metric, name(`x${p}`), engine);
     }),
   );
   const values = raw.map((x, p) => capped(x, caps[p] ?? null, dialect));

@@ -5,7 +5,7 @@ import { logProblems, noSuchList, type Plan, type PlanSource, type Problem } fro
 import { openDuckdb } from "./duckdb.ts";
 import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
 import { isFile, neighbours } from "./files.ts";
-import { type Layout, layout as layoutOf } from "./layout.ts";
+import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { readLists } from "./lists.ts";
 import { logEnd } from "./logEnd.ts";
@@ -15,19 +15,22 @@ import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import {
   atEnrolment,
+  candidates,
   copies,
   type Dialect,
   duckdb,
   enrolmentKey,
+  enrolmentRange,
   enrolments,
   markDuplicates,
+  needsEnrollingRow,
   seen,
   timeBins,
   timeRange,
   units,
 } from "./sql/index.ts";
 import type { Reduction } from "./types.ts";
-import { dayRuns, offsetsByLocalTime } from "./zone.ts";
+import { dayRuns, localDay, offsetsByLocalTime } from "./zone.ts";
 
 export interface ReduceOptions {
   readonly threads?: number | undefined;
@@ -114,11 +117,14 @@ async function stages(
   const logEndUs = layout.hasTime ? await endOfLog(layout, engine) : null;
   const key = enrolmentKey(plan, firstUs, lastUs);
   await engine.run(seen(plan, layout, key));
-  if (layout.unitFilters.some((filter) => filter.kind === "at-enrolment")) await engine.run(atEnrolment(layout, key));
+  if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
   await engine.run(enrolments(plan, layout, key, logEndUs));
 
   stage("adding up each unit", 0.75);
-  await engine.run(units(plan, layout, dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n), dialect));
+  const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
+  const firstDay = await firstEnrolmentDay(plan, layout, engine);
+  await engine.run(candidates(plan, layout, days, firstDay, dialect));
+  await engine.run(units());
   stage("adding up cells", 0.9);
   const metrics = await metricCells(plan, layout, engine, dialect);
   const account = await ledger(plan, layout, engine);
@@ -141,6 +147,14 @@ async function stages(
     facts: found,
     metrics,
   };
+}
+
+/** The local day on which the first analysed unit was enrolled. */
+async function firstEnrolmentDay(plan: Plan, layout: Layout, engine: Engine): Promise<number | null> {
+  if (!layout.hasTime) return null;
+  const [range = {}] = await engine.query(enrolmentRange(unitLineIds(plan).length - 1));
+  const firstUs = wholeOrNull(range, "first_us");
+  return firstUs === null ? null : localDay(firstUs, plan.timezone);
 }
 
 async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {

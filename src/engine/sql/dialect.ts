@@ -1,4 +1,5 @@
 import type { DayRun, Step } from "../zone.ts";
+import { type Comparison, comparedExactly, fitsDecimal, OPERATORS } from "./exact.ts";
 import { double, join, type Statement, sql } from "./sql.ts";
 
 /**
@@ -13,8 +14,8 @@ export interface Dialect {
   number(text: Statement): Statement;
   /** Whether text is a number by the grammar of DESIGN 4.1; range aside. */
   isNumber(text: Statement): Statement;
-  /** A number's text as an exact decimal for comparison; NULL when it is none. */
-  exact(text: Statement): Statement;
+  /** Whether a number's text compares so with a plan's number, as exact decimals of any length; FALSE for all else. */
+  compared(text: Statement, operator: Comparison, value: string): Statement;
   /** Microseconds on the clock that the text shows; NULL when unreadable. */
   clockUs(text: Statement): Statement;
   /** Microseconds to subtract where the text states an offset, else NULL: the clock is the plan's. */
@@ -51,9 +52,14 @@ export const duckdb: Dialect = {
   number: (text) => sql`CASE WHEN regexp_full_match(${text}, ${NUMBER})
     THEN coalesce(CAST(try_cast(${text} AS DECIMAL(18, 9)) AS DECIMAL(27, 9)), try_cast(${text} AS DECIMAL(27, 9))) END`,
   isNumber: (text) => sql`regexp_full_match(${text}, ${NUMBER})`,
-  exact: (text) => sql`CASE
-    WHEN regexp_full_match(${text}, ${SHORT_NUMBER}) THEN CAST(CAST(${text} AS DECIMAL(18, 9)) AS DECIMAL(38, 18))
-    WHEN regexp_full_match(${text}, ${NUMBER}) THEN try_cast(${text} AS DECIMAL(38, 18)) END`,
+  compared: (text, operator, value) => {
+    const short = fitsDecimal(value)
+      ? sql`WHEN regexp_full_match(${text}, ${SHORT_NUMBER})
+          THEN CAST(try_cast(${text} AS DECIMAL(18, 9)) AS DECIMAL(38, 18)) ${OPERATORS[operator]} CAST(${value} AS DECIMAL(38, 18))`
+      : sql``;
+    return sql`coalesce(CASE ${short}
+      WHEN regexp_full_match(${text}, ${NUMBER}) THEN ${comparedExactly(text, operator, value)} END, FALSE)`;
+  },
   clockUs: (text) => sql`CASE
     WHEN regexp_full_match(${text}, ${TIME}) THEN epoch_us(try_cast(regexp_replace(${text}, ${`([T ].*)(${OFFSET})$`}, '\\1') AS TIMESTAMP))
     WHEN regexp_full_match(${text}, ${EPOCH}) THEN ${epochUs(text, sql`length(ltrim(${text}, '+-'))`)}

@@ -52,10 +52,13 @@ export function seen(plan: Plan, layout: Layout, key: Key): Statement {
  * Stage 5: each unit's enrolling row, for what is judged at enrolment. Several rows of a unit may stand at its key: the
  * first in canonical order is taken, and only such units are ordered.
  * Reads   rows, seen
- * Writes  at_enrolment: unit, a<i> (unit filter condition i on the enrolling row)
+ * Writes  at_enrolment: unit, a<i> (unit filter condition i on the enrolling row), z<c> (a covariate column's value on it)
  */
 export function atEnrolment(layout: Layout, key: Key): Statement {
-  const flags = layout.flags.map((_, i) => sql`${name(`w${i}`)} AS ${name(`a${i}`)}`);
+  const taken = [
+    ...layout.flags.map((_, i) => sql`${name(`w${i}`)} AS ${name(`a${i}`)}`),
+    ...layout.covariateColumns.map((c) => sql`${name(`v${c}`)} AS ${name(`z${c}`)}`),
+  ];
   const order = join([sql`other_variant ASC NULLS LAST`, ...contentOrder(layout)], ", ");
   return sql`
     CREATE TEMP TABLE at_enrolment AS
@@ -67,11 +70,11 @@ export function atEnrolment(layout: Layout, key: Key): Statement {
     ), tied AS (
       SELECT unit FROM first GROUP BY unit HAVING count(*) > 1
     )
-    SELECT ${list([sql`unit`, ...flags])}
+    SELECT ${list([sql`unit`, ...taken])}
     FROM first
     WHERE unit NOT IN (SELECT unit FROM tied)
     UNION ALL
-    SELECT ${list([sql`unit`, ...flags])}
+    SELECT ${list([sql`unit`, ...taken])}
     FROM (
       SELECT *, row_number() OVER (PARTITION BY unit ORDER BY ${order}) AS place
       FROM first
@@ -80,10 +83,16 @@ export function atEnrolment(layout: Layout, key: Key): Statement {
     WHERE place = 1`;
 }
 
+/** Whether something is judged, or taken, at enrolment. */
+export const needsEnrollingRow = (layout: Layout): boolean =>
+  layout.covariateColumns.length > 0 || layout.unitFilters.some((filter) => filter.kind === "at-enrolment");
+
 /**
  * Stage 6: each unit and the line on which it ends (DESIGN 4, rule 6), first that applies.
- * Reads   seen, at_enrolment (where a filter judges at enrolment), list_<i>
- * Writes  enrolments: unit, rows, enrolled_us, variant, switched, line (index into unitLineIds)
+ * Reads   seen, at_enrolment (where something is judged at enrolment), list_<i>
+ * Writes  enrolments: unit, rows, enrolled_us, variant, switched, line (index into unitLineIds), and for other reasonable
+ *         choices whether the unit were analysed if units in two variants were treated the other way (other_way) or if
+ *         follow-up need not be complete (any_follow_up)
  */
 export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigint | null): Statement {
   const variants = plan.variants.length;
@@ -101,21 +110,31 @@ export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigin
         : name(`${filter.kind === "ever" ? "e" : "a"}${filter.flag}`);
     return sql`WHEN ${condition} THEN ${line(`filter:${filter.name}`)}`;
   });
-  const cases = [
+  const dates = isOutside.length === 0 ? [] : [sql`WHEN ${join(isOutside, " OR ")} THEN ${line("outside-enrolment")}`];
+  const enrolled = [
     sql`WHEN key IS NULL THEN ${line("not-enrolled")}`,
-    ...(isOutside.length === 0 ? [] : [sql`WHEN ${join(isOutside, " OR ")} THEN ${line("outside-enrolment")}`]),
+    ...dates,
     sql`WHEN variant = ${variants} THEN ${line("unknown-variant")}`,
-    ...(plan.enrolment.inTwoVariants === "exclude" ? [sql`WHEN switched THEN ${line("switched")}`] : []),
-    ...filters,
-    ...(plan.followUp?.incomplete === "exclude" && logEndUs !== null
-      ? [sql`WHEN enrolled_us + ${followUpUs(plan)} > ${logEndUs} THEN ${line("follow-up")}`]
-      : []),
   ];
-  const usesEnrolment = layout.unitFilters.some((filter) => filter.kind === "at-enrolment");
+  const switchers = [sql`WHEN switched THEN ${line("switched")}`];
+  const late =
+    plan.followUp?.incomplete === "exclude" && logEndUs !== null
+      ? [sql`WHEN enrolled_us + ${followUpUs(plan)} > ${logEndUs} THEN ${line("follow-up")}`]
+      : [];
+  const isExcluding = plan.enrolment.inTwoVariants === "exclude";
+  const analysed = line("analysed");
+  const ends = (...cases: (readonly Statement[])[]) =>
+    sql`CAST(CASE ${join([...enrolled, ...cases.flat()], "\n")} ELSE ${analysed} END AS SMALLINT)`;
+  const usesEnrolment = needsEnrollingRow(layout);
   return sql`
     CREATE TEMP TABLE enrolments AS
-    SELECT unit, rows, enrolled_us, variant, switched,
-      CAST(CASE ${join(cases, "\n")} ELSE ${line("analysed")} END AS SMALLINT) AS line
+    SELECT ${list([
+      sql`unit, rows, enrolled_us, variant, switched`,
+      ...layout.covariateColumns.map((c) => name(`z${c}`)),
+      sql`${ends(isExcluding ? switchers : [], filters, late)} AS line`,
+      sql`${ends(isExcluding ? [] : switchers, filters, late)} = ${analysed} AS other_way`,
+      sql`${ends(isExcluding ? switchers : [], filters)} = ${analysed} AS any_follow_up`,
+    ])}
     FROM (
       SELECT ${list([
         sql`s.*`,
@@ -129,8 +148,8 @@ export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigin
 }
 
 /** Length of follow-up in microseconds; days are of 24 hours. */
-export function followUpUs(plan: Plan): bigint {
-  return BigInt(Math.round((plan.followUp?.days ?? 0) * 86_400_000_000));
-}
+export const followUpUs = (plan: Plan): bigint => daysUs(plan.followUp?.days ?? 0);
+
+export const daysUs = (days: number): bigint => BigInt(Math.round(days * 86_400_000_000));
 
 const list = (items: readonly Statement[]) => join(items, ", ");

@@ -4,11 +4,11 @@ export * from "./cells.ts";
 /** What differs by engine. */
 export { type Dialect, duckdb, valueList } from "./dialect.ts";
 export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
-export { atEnrolment, enrolmentKey, enrolments, seen } from "./enrolments.ts";
+export { atEnrolment, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
 /** The stages, in order. */
 export { REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
-export { units } from "./units.ts";
+export { candidates, units } from "./units.ts";

@@ -1,19 +1,27 @@
-import type { Plan } from "../../plan/types.ts";
+import type { Metric, Plan } from "../../plan/types.ts";
 import { FATE, type Layout, type PartLayout, unitLineIds } from "../layout.ts";
 import type { DayRun, Step } from "../zone.ts";
 import { type Dialect, localDay } from "./dialect.ts";
-import { followUpUs } from "./enrolments.ts";
+import { daysUs, followUpUs } from "./enrolments.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /**
- * Stage 7: one row per analysed unit.
+ * Stage 7: one row per unit that is analysed, or would be under another reasonable choice.
  * Reads   rows, enrolments
- * Writes  units: variant, bucket, before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where the
- *         unit is left out; per metric counted<m>, its counted rows, and numberless<m>, those of them without a number
- * Every analysed unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
+ * Writes  candidates: variant, bucket, analysed, other_way, any_follow_up, first_day (enrolled on the first local day on
+ *         which an analysed unit was), before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where
+ *         the unit is left out; per metric counted<m>, its counted rows, numberless<m>, those of them without a number,
+ *         and z<m>, its covariate, NULL where missing
+ * Every unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
  * rowid: a number, where the id is text.
  */
-export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
+export function candidates(
+  plan: Plan,
+  layout: Layout,
+  days: readonly Step<DayRun>[],
+  firstDay: number | null,
+  dialect: Dialect,
+): Statement {
   const analysed = unitLineIds(plan).length - 1;
   const end = plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
   const place = layout.hasTime ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END` : sql`0`;
@@ -23,7 +31,7 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
     sql`count(*) FILTER (WHERE ${counted(part)}) AS ${name(`r${p}`)}`,
   ]);
   const metricRows = plan.metrics.flatMap((_, m) => {
-    const parts = layout.parts.filter((part) => part.metric === m);
+    const parts = layout.parts.filter((part) => part.metric === m && part.side !== "before");
     const numberless = parts.flatMap((part) =>
       part.value === null ? [] : [sql`(${counted(part)} AND ${name(`v${part.value}`)} IS NULL)`],
     );
@@ -37,13 +45,27 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
         : sql`count(*) FILTER (WHERE ${join(numberless, " OR ")}) AS ${name(`numberless${m}`)}`,
     ];
   });
+  const isFirstDay =
+    firstDay === null || !layout.hasTime ? sql`FALSE` : sql`${localDay(sql`e.enrolled_us`, days)} = ${firstDay}`;
   const values = [
-    ...layout.parts.map((part, p) => sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`),
+    ...layout.parts.flatMap((part, p) =>
+      part.side === "before" ? [] : [sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`],
+    ),
     ...plan.metrics.flatMap((_, m) => [name(`counted${m}`), name(`numberless${m}`)]),
+    ...plan.metrics.map(
+      (metric, m) => sql`CAST(${covariate(layout, metric, m)} AS ${dialect.sumType}) AS ${name(`z${m}`)}`,
+    ),
   ];
   return sql`
-    CREATE TEMP TABLE units AS
-    SELECT ${list([sql`e.variant`, sql`${dialect.bucket(sql`e.unit`)} AS bucket`, sql`before_rows`, sql`after_rows`, sql`inside_rows`, ...values])}
+    CREATE TEMP TABLE candidates AS
+    SELECT ${list([
+      sql`e.variant`,
+      sql`${dialect.bucket(sql`e.unit`)} AS bucket`,
+      sql`e.line = ${analysed} AS analysed`,
+      sql`e.other_way, e.any_follow_up, ${isFirstDay} AS first_day`,
+      sql`before_rows, after_rows, inside_rows`,
+      ...values,
+    ])}
     FROM (
       SELECT ${list([
         sql`id`,
@@ -54,17 +76,42 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
         ...metricRows,
       ])}
       FROM (
-        SELECT e.rowid AS id, e.enrolled_us, ${place} AS place, r.*
+        SELECT ${list([sql`e.rowid AS id, e.enrolled_us, ${place} AS place`, ...daysBefore(plan), sql`r.*`])}
         FROM rows AS r
         JOIN enrolments AS e ON e.unit = r.unit
-        WHERE r.fate = ${FATE.seen} AND e.line = ${analysed}
+        WHERE r.fate = ${FATE.seen} AND (e.line = ${analysed} OR e.other_way OR e.any_follow_up)
       )
       GROUP BY id
     ) AS s
     JOIN enrolments AS e ON e.rowid = s.id`;
 }
 
-const counted = (part: PartLayout) => sql`place = 0 AND ${name(`m${part.match}`)}`;
+/** The analysed among the candidates. */
+export const units = (): Statement => sql`CREATE TEMP VIEW units AS SELECT * FROM candidates WHERE analysed`;
+
+function counted(part: PartLayout): Statement {
+  const window = part.side === "before" ? sql`place = -1 AND ${name(`b${part.metric}`)}` : sql`place = 0`;
+  return sql`${window} AND ${name(`m${part.match}`)}`;
+}
+
+/** Whether a row before enrolment lies in the days that a metric's covariate looks at. */
+function daysBefore(plan: Plan): Statement[] {
+  return plan.metrics.flatMap((metric, m) =>
+    metric.adjustFor?.kind === "days-before"
+      ? [sql`r.at_us >= e.enrolled_us - ${daysUs(metric.adjustFor.days)} AS ${name(`b${m}`)}`]
+      : [],
+  );
+}
+
+/** A unit's covariate: without rows before it is 0, a column's value may be missing. */
+function covariate(layout: Layout, metric: Metric, m: number): Statement {
+  if (metric.adjustFor === null) return sql`NULL`;
+  if (metric.adjustFor.kind === "column") return name(`z${layout.columns.indexOf(metric.adjustFor.column)}`);
+  const p = layout.parts.findIndex((part) => part.metric === m && part.side === "before");
+  return metric.summary === "proportion"
+    ? sql`CASE WHEN ${name(`r${p}`)} > 0 THEN 1 ELSE 0 END`
+    : sql`coalesce(${name(`s${p}`)}, 0)`;
+}
 
 // A follow-up that touches no more local days than a 64-bit integer has bits: its days are bits, not a DISTINCT count.
 const BITS = 62;
@@ -77,7 +124,7 @@ function aggregate(part: PartLayout, isShort: boolean, days: readonly Step<DayRu
     case "count":
       return sql`count(*) FILTER (WHERE ${where})`;
     case "days":
-      return isShort
+      return isShort && part.side !== "before"
         ? sql`bit_count(bit_or(CASE WHEN ${where} THEN CAST(1 AS BIGINT) << CAST(${localDay(sql`at_us`, days)} - ${localDay(sql`enrolled_us`, days)} AS INTEGER) END))`
         : sql`count(DISTINCT ${localDay(sql`at_us`, days)}) FILTER (WHERE ${where})`;
     case "sum":

@@ -35,13 +35,13 @@ function holds(test: ColumnTest, text: Statement, dialect: Dialect): Statement {
     case "not":
       return sql`(${text} IS NOT NULL AND NOT coalesce(${isOneOf(text, test.values, dialect)}, FALSE))`;
     case "above":
-      return compared(text, sql`>`, test.value, dialect);
+      return dialect.compared(text, ">", test.value);
     case "below":
-      return compared(text, sql`<`, test.value, dialect);
+      return dialect.compared(text, "<", test.value);
     case "at-least":
-      return compared(text, sql`>=`, test.value, dialect);
+      return dialect.compared(text, ">=", test.value);
     case "at-most":
-      return compared(text, sql`<=`, test.value, dialect);
+      return dialect.compared(text, "<=", test.value);
     case "matches": {
       const patterns = test.patterns.map((pattern) => sql`${text} LIKE ${like(pattern)} ESCAPE '\\'`);
       return sql`coalesce(${join(patterns, " OR ")}, FALSE)`;
@@ -67,12 +67,8 @@ function equals(text: Statement, value: Scalar, dialect: Dialect): Statement {
         ? sql`lower(${text}) IN ('true', 't', 'yes', 'y', '1')`
         : sql`lower(${text}) IN ('false', 'f', 'no', 'n', '0')`;
     case "number":
-      return sql`coalesce(${dialect.exact(text)} = ${dialect.exact(sql`${value.value}`)}, FALSE)`;
+      return dialect.compared(text, "=", value.value);
   }
-}
-
-function compared(text: Statement, operator: Statement, value: string, dialect: Dialect): Statement {
-  return sql`coalesce(${dialect.exact(text)} ${operator} ${dialect.exact(sql`${value}`)}, FALSE)`;
 }
 
 /** `*` any run of characters, `?` one: the plan's pattern as LIKE has it. */
