@@ -15,6 +15,14 @@ export function because(reason: Absent["absent"], one: string, many: string): st
       return "what it is divided by adds up to 0";
     case "lost-digits":
       return "the values differ by too little beside their size to be measured";
+    case "few-for-rank":
+      return `one of the groups has too few ${many} with a value to say how far it can be off`;
+    case "no-width":
+      return `too many ${many} have the very same value for an interval to have a width`;
+    case "same-covariate":
+      return `what it would be adjusted for is the same for every ${one} of a group`;
+    case "no-expected-effect":
+      return "the plan expects no effect larger than the one that is asked for";
     case "not-built":
       return "this version does not compute it";
     default:

@@ -36,7 +36,7 @@ const effect = z.strictObject({
       z: numberOrNull,
       p: numberOrNull,
       pAdjusted: numberOrNull,
-      method: z.enum(["normal", "welch", "score"]),
+      method: z.enum(["normal", "welch", "score", "quantile"]),
     })
     .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise."),
   relative: z

@@ -9,6 +9,14 @@ export interface Absent {
     | "control-near-zero"
     | "zero-denominator"
     | "lost-digits"
+    /** An end of a quantile's interval lies at a rank that the arm does not have. */
+    | "few-for-rank"
+    /** A quantile whose interval has no width in either arm: most units have the very same value. */
+    | "no-width"
+    /** What is adjusted for does not vary within the arms. */
+    | "same-covariate"
+    /** A worthwhile effect is to be shown, and the plan expects none above it. */
+    | "no-expected-effect"
     | "not-built";
 }
 
@@ -35,7 +43,7 @@ export interface ArmFigures {
   readonly largest: number | null;
 }
 
-export type Method = "normal" | "welch" | "score";
+export type Method = "normal" | "welch" | "score" | "quantile";
 
 /** Variant minus control, in the metric's unit. z, p pointwise; low, high the ones that decide (METHODS 2). */
 export interface Difference {

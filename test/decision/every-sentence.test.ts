@@ -24,6 +24,10 @@ const ABSENT: readonly Absent["absent"][] = [
   "control-near-zero",
   "zero-denominator",
   "lost-digits",
+  "few-for-rank",
+  "no-width",
+  "same-covariate",
+  "no-expected-effect",
   "not-built",
 ];
 /** Around 0 and a rule of 5%: every zone of every role in both directions, ends on the limits, open ends. */

@@ -49,6 +49,7 @@ export const METHOD: Readonly<Record<Method, string>> = {
   normal: "normal",
   welch: "Welch\u2019s t",
   score: "score",
+  quantile: "order statistics",
 };
 
 export function metricSections(plan: Plan, reduction: Reduction, effects: readonly Effect[]): MetricSection[] {
