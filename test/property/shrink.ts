@@ -48,9 +48,9 @@ export async function smallest(drawn: RandomCase, form: Form): Promise<string> {
   return `seed ${drawn.seed}, ${plain ? "whatever the form" : `only as ${JSON.stringify(form)}`}\n${left.slice(0, 20).join("\n")}\n\n${files}`;
 }
 
-/** The place of the first departure: what shrinking must keep, lest it end at another one. */
-function kindOf(departures: readonly string[]): string {
-  return departures[0]?.split(":")[0] ?? "";
+/** The place of the first departure, or why the engine stopped: what shrinking must keep, lest it end at another one. */
+function kindOf([first = ""]: readonly string[]): string {
+  return first.startsWith("/") ? (first.split(":")[0] ?? "") : first.slice(0, 80).replace(/\d/g, "");
 }
 
 function without(drawn: RandomCase, source: number, at: number, size: number): RandomCase {
