@@ -19,7 +19,6 @@ export function fisher(a: number, b: number, c: number, d: number): number {
   const total = row + c + d;
   const least = Math.max(0, row + column - total);
   const most = Math.min(row, column);
-  if (least === most) return 1;
 
   /** P(x + 1) / P(x). */
   const ratio = (x: number) => ((row - x) * (column - x)) / ((x + 1) * (total - row - column + x + 1));
@@ -45,5 +44,5 @@ export function fisher(a: number, b: number, c: number, d: number): number {
     all += p;
     if (p <= seen * AS_LIKELY) asLikely += p;
   }
-  return Math.min(1, asLikely / all);
+  return asLikely / all;
 }

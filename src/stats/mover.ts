@@ -32,14 +32,12 @@ export function moverRatio(control: Counts, variant: Counts, z: number): Relativ
             halfControl: c.above,
             halfVariant: t.below,
             half: reach(c, t),
-            restControl: c.share - c.above,
           }),
     high: upperRatioLimit({
       ...terms,
       halfControl: c.below,
       halfVariant: t.above,
       half: reach(t, c),
-      restControl: c.low,
     }),
   };
 }

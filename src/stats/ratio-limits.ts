@@ -17,8 +17,6 @@ export interface RatioTerms {
   readonly halfVariant: number;
   /** sqrt(wt^2 + wc^2), the very number that bounds the difference: so both exclude 0 together, to the last bit. */
   readonly half: number;
-  /** control - halfControl, which a caller may know without the subtraction. */
-  readonly restControl: number;
 }
 
 /** The lower end. Exists whatever the sign of A, as long as halfVariant <= |variant| or A > 0. */
@@ -33,14 +31,11 @@ export function upperRatioLimit(terms: RatioTerms): number {
   return b >= 0 ? (b + root) / a : c / (b - root);
 }
 
-function quadratic({ control, variant, difference, halfControl, halfVariant, half, restControl }: RatioTerms) {
-  const a = restControl * (control + halfControl);
+function quadratic({ control, variant, difference, halfControl, halfVariant, half }: RatioTerms) {
+  const a = (control - halfControl) * (control + halfControl);
   const b = difference * control + halfControl ** 2;
   const c = (Math.abs(difference) - half) * (Math.abs(difference) + half);
-  // Both terms are at least 0 when A is; when it is not, the same number as wt^2 c^2 + wc^2 (t^2 - wt^2).
-  const square =
-    a >= 0
-      ? halfVariant ** 2 * a + (halfControl * variant) ** 2
-      : (halfVariant * control) ** 2 + halfControl ** 2 * (variant - halfVariant) * (variant + halfVariant);
+  // Below 0 by rounding at most: for A under 0 it is wt^2 c^2 + wc^2 (t^2 - wt^2), and wt <= |t| is asked for.
+  const square = halfVariant ** 2 * a + (halfControl * variant) ** 2;
   return { a, b, c, root: Math.sqrt(Math.max(0, square)) };
 }

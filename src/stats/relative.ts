@@ -25,7 +25,6 @@ export function relative(control: Level, variant: Level, q: number): Relative | 
     variant: variant.value,
     difference: estimateOf(control, variant),
     halfControl,
-    restControl: control.value - halfControl,
     halfVariant: q * Math.sqrt(spread.t),
     half: q * spread.standardError,
   };

@@ -12,7 +12,6 @@ describe("the ends of a relative interval", () => {
       const rest = {
         difference: variant - control,
         half: Math.hypot(halfControl, halfVariant),
-        restControl: control - halfControl,
       };
       expectWithin(lowerRatioLimit({ control, variant, halfControl, halfVariant, ...rest }), low, 1e-14);
       expectWithin(upperRatioLimit({ control, variant, halfControl, halfVariant, ...rest }), high, 1e-14);
