@@ -19,12 +19,24 @@ type PartRow = SumsRow & {
 };
 type ScoreRow = SumsRow & { readonly variant: number; readonly smallest: number; readonly largest: number };
 
+/** Of a metric's cells, those that its arms are made from. */
+export interface ArmCells {
+  readonly of: CellTable;
+  readonly ratio: Pick<NonNullable<MetricCells["ratio"]>, "per" | "score"> | null;
+}
+
+/** What an arm is rolled up from; an engine's cells hold more. */
+export interface ArmCells {
+  readonly of: CellTable;
+  readonly ratio: Pick<NonNullable<MetricCells["ratio"]>, "per" | "score"> | null;
+}
+
 /**
  * One metric's cells, rolled up over buckets to one arm a variant.
  * @param variants how many the plan has; a variant without analysed units has no cells and gets sums of n 0
  * @returns index = variant in plan order
  */
-export function arms(metric: Metric, cells: MetricCells, variants: number): Arm[] {
+export function arms(metric: Metric, cells: ArmCells, variants: number): Arm[] {
   const of = partSums(cells.of, variants);
   switch (metric.summary) {
     case "mean":

@@ -9,7 +9,7 @@ import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { readLists } from "./lists.ts";
 import { logEnd } from "./logEnd.ts";
-import { metricCells } from "./metrics.ts";
+import { metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
@@ -126,7 +126,8 @@ async function stages(
   await engine.run(candidates(plan, layout, days, firstDay, dialect));
   await engine.run(units());
   stage("adding up cells", 0.9);
-  const metrics = await metricCells(plan, layout, engine, dialect);
+  const values = await metricValues(plan, layout, engine, dialect);
+  const metrics = await metricCells(plan, values, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
   const prints = await fingerprints;

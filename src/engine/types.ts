@@ -74,7 +74,61 @@ export interface MetricCells {
   readonly cap: { readonly value: string; readonly units: ByVariant } | null;
   /** The numerator, or the metric's only part, after the cap. */
   readonly of: CellTable;
-  readonly ratio: { readonly per: CellTable; readonly score: ScoreTable } | null;
+  readonly ratio: { readonly per: CellTable; readonly score: ScoreTable; readonly joint: JointTable } | null;
+  /** x of the adjusted contrast, over the units that have one and a value; joint sums of (value, x) over the same. */
+  readonly covariate: { readonly x: CellTable; readonly joint: JointTable } | null;
+  /** The same metric under other reasonable choices (METHODS 6): one cell an arm, bucket 0. */
+  readonly choices: readonly ChoiceCells[];
+  /** Per variant the pair (value, and x of a ratio's denominator or a covariate) of the unit with the smallest and the largest value. */
+  readonly ends: readonly (UnitEnds | null)[];
+}
+
+export type ChoiceId =
+  | "no-cap"
+  | "cap-0.99"
+  | "cap-0.999"
+  | "log"
+  | "other-way-in-two-variants"
+  | "any-follow-up"
+  | "without-first-day";
+
+export interface ChoiceCells {
+  readonly choice: ChoiceId;
+  readonly of: CellTable;
+  readonly joint: JointTable | null;
+  /** Only for log: log(1 + x), cells of a double without exact total. */
+  readonly logged: ScoreTable | null;
+}
+
+/** In 10^-9 of the unit of each; x is null where there is none. */
+export interface UnitEnds {
+  readonly smallest: { readonly value: bigint; readonly x: bigint | null };
+  readonly largest: { readonly value: bigint; readonly x: bigint | null };
+}
+
+/**
+ * Joint power sums of two values (y, x) per variant and bucket, over the units that have both: S_jk is the sum of u^j w^k,
+ * u = (y - pivot) / scale of y, w likewise of x, in two integers as above.
+ */
+export interface JointTable {
+  readonly pivots: readonly [string, string];
+  readonly scales: readonly [number, number];
+  readonly variant: readonly number[];
+  readonly bucket: readonly number[];
+  readonly n: readonly number[];
+  readonly high10: readonly bigint[];
+  readonly high01: readonly bigint[];
+  readonly high20: readonly bigint[];
+  readonly high11: readonly bigint[];
+  readonly high02: readonly bigint[];
+  readonly low10: readonly bigint[];
+  readonly low01: readonly bigint[];
+  readonly low20: readonly bigint[];
+  readonly low11: readonly bigint[];
+  readonly low02: readonly bigint[];
+  /** Exact sums of y and of x over these units, in 10^-9. */
+  readonly totalY: readonly bigint[];
+  readonly totalX: readonly bigint[];
 }
 
 /**

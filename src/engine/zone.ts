@@ -11,7 +11,7 @@ export interface Step<T> {
   readonly value: T;
 }
 
-const FIRST = Temporal.Instant.from("1900-01-01T00:00Z");
+const FIRST = Temporal.Instant.from("1800-01-01T00:00Z");
 // Rules beyond this year repeat the last offset; no event log lies there.
 const LAST = Temporal.Instant.from("2150-01-01T00:00Z");
 const DAY_US = 86_400_000_000n;

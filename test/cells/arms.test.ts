@@ -1,8 +1,9 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
+import type { ArmCells, ArmCells } from "../../src/cells/arms.ts";
 import { arms } from "../../src/cells/index.ts";
 import type { Arm, PowerSums } from "../../src/cells/types.ts";
-import type { CellTable, MetricCells, ScoreTable } from "../../src/engine/types.ts";
+import type { CellTable, ScoreTable } from "../../src/engine/types.ts";
 import type { Summary } from "../../src/plan/types.ts";
 import { metricOf } from "../checks/make.ts";
 import { nanoOf, sumsTogether } from "../stats/arms.ts";
@@ -12,15 +13,7 @@ type Unit = readonly [variant: number, bucket: number, value: number];
 
 const metric = (summary: Summary) => metricOf({ name: "Fare", summary });
 
-const cellsOf = (of: CellTable, ratio: MetricCells["ratio"] = null): MetricCells => ({
-  metric: "Fare",
-  leftOut: [],
-  countedRows: 0,
-  countedWithoutNumber: 0,
-  cap: null,
-  of,
-  ratio,
-});
+const cellsOf = (of: CellTable, ratio: ArmCells["ratio"] = null): ArmCells => ({ of, ratio });
 
 /** Cells as an engine gives them, in any order of variant and bucket; the sums come from the tests' own power sums. */
 function cellTable(units: readonly Unit[]): CellTable {

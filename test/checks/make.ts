@@ -163,7 +163,18 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
   const none = { variant: [], bucket: [], n: [], total: [], smallest: [], largest: [] };
   const powers = { high1: [], high2: [], high3: [], high4: [], low1: [], low2: [], low3: [], low4: [] };
   const of = { pivot: "0", scale: 1, ...none, ...powers };
-  return { metric, leftOut, countedRows: 0, countedWithoutNumber: 0, cap: null, of, ratio: null };
+  return {
+    metric,
+    leftOut,
+    countedRows: 0,
+    countedWithoutNumber: 0,
+    cap: null,
+    of,
+    ratio: null,
+    covariate: null,
+    choices: [],
+    ends: [],
+  };
 }
 
 function total(counts: readonly number[]): number {

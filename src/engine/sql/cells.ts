@@ -34,7 +34,7 @@ export const doubleValue = (x: Statement, scale: number): Measured => ({
  * Reads   units
  * Gives   variant, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
  */
-export function cells(values: readonly Measured[]): Statement {
+export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): Statement {
   // Three nested levels, so that each of u, its powers and their whole parts is computed once a unit.
   const us = values.flatMap((value, i) => [sql`${value.u} AS ${name(`u${i}`)}`, sql`${value.x} AS ${name(`x${i}`)}`]);
   const terms = values.flatMap((_, i) => {
@@ -44,13 +44,7 @@ export function cells(values: readonly Measured[]): Statement {
   });
   const sums = values.flatMap((value, i) => [
     sql`count(${name(`x${i}`)}) AS ${name(`n${i}`)}`,
-    ...ORDERS.flatMap((k) => {
-      const t = name(`t${i}_${k}`);
-      return [
-        sql`coalesce(sum(CAST(floor(${t}) AS BIGINT)), 0) AS ${name(`h${i}_${k}`)}`,
-        sql`coalesce(sum(CAST(floor((${t} - floor(${t})) * ${TWO_60} + 0.5) AS BIGINT)), 0) AS ${name(`l${i}_${k}`)}`,
-      ];
-    }),
+    ...ORDERS.flatMap((k) => twoIntegers(name(`t${i}_${k}`), `${i}_${k}`)),
     ...(value.isDecimal ? [sql`sum(${name(`x${i}`)}) AS ${name(`total${i}`)}`] : []),
     sql`min(${name(`x${i}`)}) AS ${name(`least${i}`)}`,
     sql`max(${name(`x${i}`)}) AS ${name(`most${i}`)}`,
@@ -59,10 +53,88 @@ export function cells(values: readonly Measured[]): Statement {
     SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
     FROM (
       SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`bucket`, ...us])} FROM units)
+      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
     )
     GROUP BY variant, bucket
     ORDER BY variant, bucket`;
+}
+
+/** Which of the candidates, and in which groups. */
+export interface Over {
+  readonly bucket: Statement;
+  readonly units: Statement;
+}
+export const EACH_BUCKET: Over = { bucket: sql`bucket`, units: sql`analysed` };
+export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
+/** Arms apart by what other choices ask: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day. */
+export const EACH_STANDING: Over = {
+  bucket: sql`CASE WHEN analysed THEN 1 ELSE 0 END + CASE WHEN other_way THEN 2 ELSE 0 END
+    + CASE WHEN any_follow_up THEN 4 ELSE 0 END + CASE WHEN first_day THEN 8 ELSE 0 END`,
+  units: sql`TRUE`,
+};
+
+const PAIRS = ["10", "01", "20", "11", "02"] as const;
+
+/**
+ * Joint sums of pairs of values, over the units that have both.
+ * Gives   variant, bucket, and per pair i: n<i>, h<i>_jk, l<i>_jk, y<i> and x<i> (exact sums)
+ */
+export function jointCells(pairs: readonly (readonly [Measured, Measured])[], over: Over = EACH_BUCKET): Statement {
+  const us = pairs.flatMap(([y, x], i) => [
+    sql`${y.u} AS ${name(`u${i}`)}, ${x.u} AS ${name(`w${i}`)}`,
+    sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.x} END AS ${name(`y${i}`)}`,
+    sql`CASE WHEN ${y.x} IS NOT NULL THEN ${x.x} END AS ${name(`x${i}`)}`,
+  ]);
+  const terms = pairs.flatMap((_, i) => {
+    const [u, w] = [name(`u${i}`), name(`w${i}`)];
+    // A sum of one value counts only where the other is there too: times 1 or NULL.
+    const products = [
+      sql`${u} * (${w} * 0 + 1)`,
+      sql`${w} * (${u} * 0 + 1)`,
+      sql`${u} * ${u} * (${w} * 0 + 1)`,
+      sql`${u} * ${w}`,
+      sql`${w} * ${w} * (${u} * 0 + 1)`,
+    ];
+    return [
+      name(`y${i}`),
+      name(`x${i}`),
+      ...PAIRS.map((jk, at) => sql`(${products[at] ?? u}) * ${TWO_60} AS ${name(`t${i}_${jk}`)}`),
+    ];
+  });
+  const sums = pairs.flatMap((_, i) => [
+    sql`count(${name(`y${i}`)}) AS ${name(`n${i}`)}`,
+    ...PAIRS.flatMap((jk) => twoIntegers(name(`t${i}_${jk}`), `${i}_${jk}`)),
+    sql`sum(${name(`y${i}`)}) AS ${name(`y${i}`)}, sum(${name(`x${i}`)}) AS ${name(`x${i}`)}`,
+  ]);
+  return sql`
+    SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
+    FROM (
+      SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
+      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
+    )
+    GROUP BY variant, bucket
+    ORDER BY variant, bucket`;
+}
+
+/** Sums of the whole part and of the rest of t, as 64-bit terms. */
+function twoIntegers(t: Statement, suffix: string): Statement[] {
+  return [
+    sql`coalesce(sum(CAST(floor(${t}) AS BIGINT)), 0) AS ${name(`h${suffix}`)}`,
+    sql`coalesce(sum(CAST(floor((${t} - floor(${t})) * ${TWO_60} + 0.5) AS BIGINT)), 0) AS ${name(`l${suffix}`)}`,
+  ];
+}
+
+/** Per variant the pair of the unit with the smallest and of that with the largest value; ties by x. */
+export function pairsAtEnds(pairs: readonly (readonly [Statement, Statement | null])[]): Statement {
+  const ends = pairs.flatMap(([y, x], i) => {
+    const pair = sql`{'y': ${y}, 'x': ${x ?? sql`CAST(NULL AS DECIMAL(38, 9))`}}`;
+    const has = sql`FILTER (WHERE ${y} IS NOT NULL)`;
+    return [
+      sql`(min(${pair}) ${has}).y AS ${name(`ly${i}`)}, (min(${pair}) ${has}).x AS ${name(`lx${i}`)}`,
+      sql`(max(${pair}) ${has}).y AS ${name(`my${i}`)}, (max(${pair}) ${has}).x AS ${name(`mx${i}`)}`,
+    ];
+  });
+  return sql`SELECT ${list([sql`variant`, ...ends])} FROM units GROUP BY variant`;
 }
 
 /** Powers by repeated multiplication, left to right: ((u u) u) u. */
@@ -76,12 +148,12 @@ function product(factors: readonly Statement[]): Statement {
  * What a pivot and a scale are worked out from: count, exact sum, smallest and largest per power-of-two class of |x|.
  * Gives   part, class (NULL for 0), n, total, least, most
  */
-export function classes(values: readonly Statement[], dialect: Dialect): Statement {
+export function classes(values: readonly Statement[], from: Statement, dialect: Dialect): Statement {
   const parts = values.map(
     (x, part) => sql`
     SELECT ${part} AS part, CASE WHEN x <> 0 THEN ${dialect.powerClass(sql`x`)} END AS class,
       count(*) AS n, sum(x) AS total, min(x) AS least, max(x) AS most
-    FROM (SELECT ${x} AS x FROM units)
+    FROM (SELECT ${x} AS x FROM ${from})
     WHERE x IS NOT NULL
     GROUP BY 1, 2`,
   );
@@ -139,12 +211,12 @@ export function score(
 }
 
 /** Smallest and largest of some doubles over all units, to find their scales. */
-export function extremes(values: readonly Statement[]): Statement {
+export function extremes(values: readonly Statement[], from: Statement = sql`units`): Statement {
   const ends = values.flatMap((x, i) => [
     sql`min(${x}) AS ${name(`least${i}`)}`,
     sql`max(${x}) AS ${name(`most${i}`)}`,
   ]);
-  return sql`SELECT ${list(ends)} FROM units`;
+  return sql`SELECT ${list(ends)} FROM ${from}`;
 }
 
 const list = (items: readonly Statement[]) => join(items, ", ");

@@ -1,5 +1,5 @@
 import type { DayRun, Step } from "../zone.ts";
-import { type Comparison, comparedExactly, fitsDecimal, OPERATORS } from "./exact.ts";
+import { type Comparison, comparedExactly, fitsDecimal, OPERATORS, withoutExponent } from "./exact.ts";
 import { double, join, type Statement, sql } from "./sql.ts";
 
 /**
@@ -33,7 +33,8 @@ export interface Dialect {
   lastValue(value: Statement, atUs: Statement, condition: Statement): Statement;
 }
 
-const NUMBER = "[+-]?[0-9]+([.][0-9]+)?(e[+-]?[0-9]+)?";
+const PLAIN_NUMBER = "[+-]?[0-9]+([.][0-9]+)?";
+const NUMBER = `${PLAIN_NUMBER}(e[+-]?[0-9]+)?`;
 const SHORT_NUMBER = "[+-]?[0-9]{1,9}([.][0-9]{1,9})?";
 const DATE = "[0-9]{4}-[0-9]{2}-[0-9]{2}";
 const OFFSET = "Z|[+-]([01][0-9]|2[0-3])(:?[0-5][0-9])?";
@@ -49,8 +50,10 @@ export const duckdb: Dialect = {
   valueType: sql`DECIMAL(27, 9)`,
   sumType: sql`DECIMAL(38, 9)`,
   // Short values fit 64 bits; one cast to 128 bits costs a hundred times as much.
-  number: (text) => sql`CASE WHEN regexp_full_match(${text}, ${NUMBER})
-    THEN coalesce(CAST(try_cast(${text} AS DECIMAL(18, 9)) AS DECIMAL(27, 9)), try_cast(${text} AS DECIMAL(27, 9))) END`,
+  number: (text) => sql`CASE
+    WHEN regexp_full_match(${text}, ${PLAIN_NUMBER})
+    THEN coalesce(CAST(try_cast(${text} AS DECIMAL(18, 9)) AS DECIMAL(27, 9)), try_cast(${text} AS DECIMAL(27, 9)))
+    WHEN regexp_full_match(${text}, ${NUMBER}) THEN try_cast(${withoutExponent(text, 18)} AS DECIMAL(27, 9)) END`,
   isNumber: (text) => sql`regexp_full_match(${text}, ${NUMBER})`,
   compared: (text, operator, value) => {
     const short = fitsDecimal(value)
