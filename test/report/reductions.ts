@@ -121,5 +121,8 @@ function cellsOf(name: string, plan: Plan): MetricCells {
     cap: metric?.cap ? { value: "1450.5", units: plan.variants.map(() => 51) } : null,
     of: noCells,
     ratio: null,
+    covariate: null,
+    choices: [],
+    ends: [],
   };
 }
