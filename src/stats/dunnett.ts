@@ -1,4 +1,4 @@
-import { bonferroniCritical } from "./bonferroni.ts";
+import { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
 import { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
 import { integral } from "./quadrature.ts";
 import { root } from "./root.ts";
@@ -24,13 +24,13 @@ export function dunnettP(z: number, lambdas: readonly number[]): number {
   const parts = lambdas.map((lambda) => ({ lambda, s: Math.sqrt((1 - lambda) * (1 + lambda)) }));
   const anyBeyond = (y: number) => {
     let noneBeyond = 0;
-    for (const { lambda, s } of parts) {
-      const q = normalUpperTail((size - lambda * y) / s) + normalUpperTail((size + lambda * y) / s);
-      noneBeyond += Math.log1p(-Math.min(q, 1));
-    }
+    for (const part of parts) noneBeyond += Math.log1p(-Math.min(1, beyond(size, y, part)));
     return density(y) * -Math.expm1(noneBeyond);
   };
-  return Math.min(1, 2 * integral(anyBeyond, panels(size, parts), 1e-12));
+  const found = 2 * integral(anyBeyond, panels(size, parts), 1e-12);
+  // Rounding must not carry it past the bounds that hold for any correlation: one Z alone, and Bonferroni's.
+  const alone = normalTwoSided(size);
+  return Math.max(alone, Math.min(found, bonferroniP(alone, lambdas.length)));
 }
 
 /**
@@ -52,6 +52,17 @@ export function dunnettCritical(lambdas: readonly number[], alpha: number): numb
   return root(over, low, high);
 }
 
+interface Part {
+  readonly lambda: number;
+  readonly s: number;
+}
+
+/** q(y) = P(|lambda y + s E| >= z), y >= 0. Without a part of its own, Z is y itself. */
+function beyond(z: number, y: number, { lambda, s }: Part): number {
+  if (s === 0) return y >= z ? 1 : 0;
+  return normalUpperTail((z - lambda * y) / s) + normalUpperTail((z + lambda * y) / s);
+}
+
 /** 1 / sqrt(2 pi) */
 const DENSITY_AT_0 = 0.3989422804014327;
 
@@ -63,7 +74,7 @@ function density(y: number): number {
  * Where the integrand bends: about lambda z, where y lies when Z_i just reaches z, and about z / lambda, from where on
  * nearly every Z_i lies beyond; s and s / lambda are the widths of these. Beyond the end lies under 1e-17 of the tail.
  */
-function panels(z: number, parts: readonly { readonly lambda: number; readonly s: number }[]): number[] {
+function panels(z: number, parts: readonly Part[]): number[] {
   const end = Math.sqrt(z * z + 80);
   const bends = parts.flatMap(({ lambda, s }) =>
     [-8, 0, 8].flatMap((widths) => [lambda * z + widths * s, (z + widths * s) / lambda]),

@@ -3,16 +3,34 @@
 // Contrasts
 export { isAbsent } from "./absent.ts";
 export { armFigures } from "./arm-figures.ts";
+// More than one question
+export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
 export { contrast } from "./contrast.ts";
+export { dunnettCritical, dunnettP } from "./dunnett.ts";
+// Power and sizes
+export { type Exaggeration, exaggeration } from "./exaggeration.ts";
 // Tests of counts
 export { fisher } from "./fisher.ts";
+export { holm } from "./holm.ts";
 export { independence } from "./independence.ts";
 // Moments
 export { type Moments, moments } from "./moments.ts";
 export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
+export { normalQuantile } from "./normal-quantile.ts";
 export { pearson } from "./pearson.ts";
+export {
+  beyondWorthwhile,
+  detectable,
+  powerWith,
+  type Question,
+  type SizeForAll,
+  sizeForAll,
+  unitsFor,
+} from "./power.ts";
+export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
+export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";
 
 // Types

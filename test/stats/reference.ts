@@ -65,3 +65,35 @@ export const fromR = () =>
     independence: { table: number[][]; chiSquare: string; df: number; p: string; smallestExpected: string }[];
     goodness: { counts: number[]; shares: number[]; chiSquare: string; df: number; p: string }[];
   }>("values.json");
+
+/** mpmath 1.3.0: Dunnett's tails and critical values, 16 digits. */
+export const dunnett = () =>
+  read<{
+    tails: [z: number, lambdas: number[], p: string][];
+    critical: [alpha: number, lambdas: number[], critical: string][];
+  }>("dunnett.json");
+
+/** R 4.2.2, mvtnorm 1.1-3; `off` is how far the last digits can be off. */
+export const dunnettByMvtnorm = () =>
+  read<{ z: number; lambdas: number[]; p: string; off: string }[]>("dunnett-mvtnorm.json");
+
+/** R 4.2.2: families of p with p.adjust's; null where one is missing. */
+export const adjustedPs = () =>
+  read<{ name: string; p: (string | null)[]; holm: (string | null)[]; benjaminiHochberg: (string | null)[] }[]>(
+    "adjusted-p.json",
+  );
+
+/** R 4.2.2: power.t.test, power.prop.test (units an arm), and exaggeration by numerical integration. */
+export const power = () =>
+  read<{
+    means: { delta: number; sd: number; alpha: number; power: number; n: string }[];
+    shares: { control: number; variant: number; alpha: number; power: number; n: string }[];
+    exaggeration: {
+      effect: number;
+      standardError: number;
+      alpha: number;
+      power: string;
+      wrongSign: string;
+      factor: string;
+    }[];
+  }>("power.json");
