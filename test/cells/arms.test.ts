@@ -1,5 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
+import type { ArmCells } from "../../src/cells/arms.ts";
 import { arms } from "../../src/cells/index.ts";
 import type { Arm, PowerSums } from "../../src/cells/types.ts";
 import type { CellTable, ScoreTable } from "../../src/engine/types.ts";
