@@ -4,7 +4,7 @@ import type { Engine } from "./engine.ts";
 import { fingerprint } from "./files.ts";
 import type { Layout } from "./layout.ts";
 import { delimitedHeader } from "./open.ts";
-import { name, type Statement, sql } from "./sql/index.ts";
+import { join, name, type Statement, sql } from "./sql/index.ts";
 import type { InputFile } from "./types.ts";
 import { UnusableLog } from "./unusable.ts";
 
@@ -34,12 +34,12 @@ export async function readLists(plan: Plan, layout: Layout, folder: string, engi
 }
 
 function listTable(list: number, file: string, delimiter: string, width: number, column: number): Statement {
-  const columns = Array.from({ length: Math.max(width, 1) }, (_, i) => `'c${i}': 'VARCHAR'`);
+  const columns = Array.from({ length: Math.max(width, 1) }, (_, i) => sql`${`c${i}`}: 'VARCHAR'`);
   const id = name(`c${Math.max(column, 0)}`);
   return sql`
     CREATE TEMP TABLE ${name(`list_${list}`)} AS
     SELECT ${id} AS id
-    FROM read_csv(${file}, auto_detect = false, header = ${column >= 0}, columns = {${{ text: columns.join(", ") }}},
+    FROM read_csv(${file}, auto_detect = false, header = ${column >= 0}, columns = {${join(columns, ", ")}},
       delim = ${delimiter}, quote = '"', escape = '"', nullstr = '', strict_mode = false, null_padding = true)
     WHERE ${id} IS NOT NULL`;
 }

@@ -7,18 +7,22 @@
  */
 export interface Statement {
   readonly text: string;
+  readonly [MADE_HERE]: true;
 }
+// Only this file can make a statement: a row or a record that has a text is none.
+const MADE_HERE: unique symbol = Symbol("made by sql.ts");
+const statement = (text: string): Statement => ({ text, [MADE_HERE]: true });
 
 export type Hole = Statement | string | bigint | number | boolean | null;
 
 /** SQL from a template: statements as they are, values as literals. */
 export function sql(parts: TemplateStringsArray, ...holes: readonly Hole[]): Statement {
-  return { text: parts.reduce((text, part, i) => text + part + (i < holes.length ? literal(holes[i]) : ""), "") };
+  return statement(parts.reduce((text, part, i) => text + part + (i < holes.length ? literal(holes[i]) : ""), ""));
 }
 
 /** An identifier in double quotes. */
 export function name(identifier: string): Statement {
-  return { text: `"${identifier.replaceAll('"', '""')}"` };
+  return statement(`"${identifier.replaceAll('"', '""')}"`);
 }
 
 /** Statements joined by a separator; an empty list is an empty statement. */
@@ -26,7 +30,7 @@ export function join(
   items: readonly Statement[],
   separator: " AND " | " OR " | ", " | "\n" | "\nUNION ALL\n",
 ): Statement {
-  return { text: items.map((item) => item.text).join(separator) };
+  return statement(items.map(literal).join(separator));
 }
 
 /** A double that comes back as the same double: shortest round-trip digits, cast by the engine. */
@@ -42,16 +46,22 @@ function literal(hole: Hole | undefined): string {
     case "string":
       return text(hole);
     case "bigint":
-      return String(hole);
+      return wholeNumber(String(hole));
     case "boolean":
       return hole ? "TRUE" : "FALSE";
     case "number":
       if (!Number.isSafeInteger(hole)) throw new Error(`${hole} is no whole number: write it with double()`);
-      return String(hole);
+      return wholeNumber(String(hole));
     case "object":
+      if (hole[MADE_HERE] !== true) throw new Error("an object that is no statement");
       return hole.text;
+    default:
+      throw new Error(`no literal for a ${typeof hole}`);
   }
 }
+
+/** In brackets where it has a sign: two of them in a row begin a comment. */
+const wholeNumber = (digits: string): string => (digits.startsWith("-") ? `(${digits})` : digits);
 
 /** Standard SQL has no escape but the doubled quote; a NUL would end the statement in C, so it is written by its code. */
 function text(value: string): string {
