@@ -60,9 +60,9 @@ export function arms(metric: Metric, cells: ArmCells, variants: number): Arm[] {
 /** The score as readers see it, d + R: the arm's mean of d is 0, that of the score is the ratio. */
 function ratioArm(numerator: PowerSums, denominator: PowerSums, d: PowerSums): Arm {
   if (d.n !== 0 && d.n !== numerator.n) throw new Error(`${d.n} scores for ${numerator.n} units`);
-  const below = denominator.total ?? 0n;
-  if (d.n === 0 || below === 0n) return { kind: "ratio", numerator, denominator, score: null };
-  const ratio = nearestNumber(fraction(numerator.total ?? 0n, below));
+  // An engine gives no score to an arm whose denominators add up to 0.
+  if (d.n === 0) return { kind: "ratio", numerator, denominator, score: null };
+  const ratio = nearestNumber(fraction(numerator.total ?? 0n, denominator.total ?? 0n));
   const seen = (end: number | null) => (end === null ? null : end + ratio);
   return {
     kind: "ratio",
