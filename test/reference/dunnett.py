@@ -43,7 +43,7 @@ tails = [[z, lambdas, text(tail(z, lambdas))] for z, lambdas in [
     (20.0, [half, half]), (20.0, [0.95, 0.2, 0.6]), (37.0, [half, half]), (37.0, [0.3, 0.99])]]
 mp.dps = 40
 critical = []
-for alpha, lambdas in [(0.05, [half] * k) for k in (2, 3, 4, 5, 6, 7, 8, 9)] + [(0.01, [half] * k) for k in (2, 5, 9)] + [
+for alpha, lambdas in [(0.05, [half] * k) for k in (2, 3, 4, 5, 6, 7, 8, 9)] + [(0.01, [half] * k) for k in (2, 3, 5, 9)] + [
         (0.05, [0.3, 0.8]), (0.05, [0.9, 0.9, 0.2]), (0.001, [0.6, 0.7, 0.8]), (1e-6, [half, half]), (0.5, [half, 0.4])]:
     start = sqrt(2) * erfinv(1 - mpf(alpha) / len(lambdas))  # Bonferroni's
     f = lambda z: log(tail(z, lambdas) / mpf(alpha))
