@@ -29,6 +29,10 @@ export {
   sizeForAll,
   unitsFor,
 } from "./power.ts";
+// Quantiles
+export { type QuantileContrast, quantileContrast } from "./quantile.ts";
+export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
+export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
 export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";

@@ -39,7 +39,7 @@ const SHORT_NUMBER = "[+-]?[0-9]{1,9}([.][0-9]{1,9})?";
 const DATE = "[0-9]{4}-[0-9]{2}-[0-9]{2}";
 const OFFSET = "Z|[+-]([01][0-9]|2[0-3])(:?[0-5][0-9])?";
 const TIME = `${DATE}([T ]([01][0-9]|2[0-3]):[0-5][0-9](:[0-5][0-9]([.][0-9]+)?)?(${OFFSET})?)?`;
-const EPOCH = "[+-]?[0-9]{1,19}";
+const EPOCH = "[+-]?[0-9]+";
 // The end of the calendar that plans are read with, on either side of 1970.
 const LAST_US = 8_640_000_000_000_000_000n;
 
