@@ -1,0 +1,46 @@
+import { fraction, NANO, nearestNumber } from "../cells/index.ts";
+import type { Arm, PowerSums } from "../cells/types.ts";
+import { isAbsent } from "./absent.ts";
+import { armFigures } from "./arm-figures.ts";
+import type { ShapedArm } from "./expansion.ts";
+import { level } from "./level.ts";
+import { moments } from "./moments.ts";
+import type { Absent } from "./types.ts";
+
+type Ratio = Extract<Arm, { readonly kind: "ratio" }>;
+
+/**
+ * An arm as the expansion takes it: n, v, g1, g2 and, of a ratio, c.
+ *
+ * A skewness below its rounding bound is 0, for that is what it cannot be told from; a kurtosis can be lost in rounding.
+ * @returns as the level where it has no variance; `lost-digits` without a kurtosis
+ */
+export function shapedArm(arm: Arm): ShapedArm | Absent {
+  const found = level(arm);
+  if (isAbsent(found)) return found;
+  if (isAbsent(found.variance)) return found.variance;
+  const { n, variance } = found;
+  if (variance === 0) return { n, variance, skewness: 0, kurtosis: 0, ratio: null };
+  const { skewness, kurtosis } = armFigures(arm);
+  if (kurtosis === null) return { absent: "lost-digits" };
+  return { n, variance, skewness: skewness ?? 0, kurtosis, ratio: arm.kind === "ratio" ? ratioTerm(arm) : null };
+}
+
+/**
+ * c = cov(a - R b, b) / (n mean(b)^2) of a ratio of totals, without joint sums: with e = a - R b, a is e + R b, so
+ *
+ *   cov(e, b) = (var a - var e - R^2 var b) / (2 R),   var e = mean(b)^2 var d, d the score
+ * @returns null where R is 0, for then a says nothing about b, and where a variance is lost in rounding
+ */
+export function ratioTerm({ numerator, denominator, score }: Ratio): number | null {
+  if (score === null || !numerator.total || !denominator.total) return null;
+  const ratio = nearestNumber(fraction(numerator.total, denominator.total));
+  const meanOfB = nearestNumber(fraction(denominator.total, BigInt(denominator.n) * NANO));
+  const [a, b, d] = [varianceOf(numerator), varianceOf(denominator), varianceOf(score)];
+  if (a === null || b === null || d === null) return null;
+  return ((a - ratio * ratio * b) / (meanOfB * meanOfB) - d) / (2 * ratio * numerator.n);
+}
+
+function varianceOf(sums: PowerSums): number | null {
+  return sums.smallest === sums.largest ? 0 : moments(sums).variance;
+}
