@@ -21,16 +21,17 @@ export function divideRounded(value: bigint, by: bigint): bigint {
   return negative ? -rounded : rounded;
 }
 
-/** The nearest double to value / by, 0 < by: enough digits of the exact quotient, read as text. */
+/** The nearest double to value / by, 0 < by, ties to even; for quotients that are no smaller than a normal double. */
 export function quotient(value: bigint, by: bigint): number {
   if (value === 0n) return 0;
   const size = value < 0n ? -value : value;
-  // 25 significant digits, and a last one that is never 0 when the rest is not: the text rounds as the quotient does.
-  const shift = 25 - (size.toString().length - by.toString().length);
-  const scaled = shift >= 0 ? size * 10n ** BigInt(shift) : size;
-  const divisor = shift >= 0 ? by : by * 10n ** BigInt(-shift);
-  const digits = scaled / divisor;
-  const sticky = scaled % divisor === 0n ? "" : "1";
-  const exponent = -shift - (sticky === "" ? 0 : 1);
-  return Number(`${value < 0n ? "-" : ""}${digits}${sticky}e${exponent}`);
+  const shift = BITS - bits(size) + bits(by);
+  const scaled = shift >= 0 ? size << BigInt(shift) : size;
+  const divisor = shift >= 0 ? by : by << BigInt(-shift);
+  // Far more bits than a double has, and a last one that is never 0 when the rest is not: rounded once, as the quotient is.
+  const leading = scaled / divisor;
+  const rounded = Number(scaled % divisor === 0n ? leading : leading | 1n) * 2 ** -shift;
+  return value < 0n ? -rounded : rounded;
 }
+const BITS = 80;
+const bits = (size: bigint): number => size.toString(2).length;
