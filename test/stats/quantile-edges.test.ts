@@ -34,6 +34,9 @@ describe("an interval at its edges", () => {
       expect(found.relative).toMatchObject({ estimate: -1, low: -1 });
       const owing = compared(hundred(1, 55, doubled), hundred(-5, 45, 0), "0.5", 0.05);
       expect(owing.relative).toMatchObject({ estimate: -1, high: -1 });
+      // r c + 1 = |r| (u_c - c), by the definition with c = 1: r = -1 / u_c.
+      const below = compared(hundred(1, 55, doubled), hundred(-5, 45, -1), "0.5", 0.05);
+      expectWithin("absent" in below.relative ? null : below.relative.high, -1 / doubled - 1, 1e-14);
     }
   });
 
