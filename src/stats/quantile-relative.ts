@@ -41,9 +41,7 @@ function lowerEnd(c: Control, t: bigint, low: bigint): number | null {
 function upperEnd(c: Control, t: bigint, high: bigint): number | null {
   if (high > 0n) return upperRatioLimit(terms(c.at, t, c.at - c.low, high - t));
   if (high === 0n) return -1;
-  if (c.high === null) return null;
-  // All below 0: the lower end of -t / c, turned round. With rho = r - 1: -(rho' + 1) - 1.
-  return -lower(terms(c.at, -t, c.high - c.at, high - t)) - 2;
+  return c.high === null ? null : upperRatioLimit(terms(c.at, t, c.high - c.at, high - t));
 }
 
 /** Where neither arm can move, an end is the estimate: 0 over 0 by the formula when that is 0. */
