@@ -6,4 +6,4 @@ export { type Fraction, fraction, nearestNumber } from "./fraction.ts";
 export { NANO } from "./sums.ts";
 
 // Types
-export type { Arm, PowerSums } from "./types.ts";
+export type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";

@@ -27,3 +27,31 @@ export type Arm =
       /** Of d = (a - R b) / mean(b); null when the arm has no unit or its denominators sum to 0. */
       readonly score: PowerSums | null;
     };
+
+/**
+ * Exact joint sums of two values (y, x) over the units of an arm that have both: S_jk is the sum of u^j w^k, u = (y - pivot)
+ * / scale with y's pivot and scale, w likewise with x's. Groups with the same pivots and scales are merged by adding.
+ */
+export interface JointSums {
+  readonly n: number;
+  readonly pivots: readonly [y: string, x: string];
+  readonly scales: readonly [y: number, x: number];
+  /** In units of 2^-120. */
+  readonly s10: bigint;
+  readonly s01: bigint;
+  readonly s20: bigint;
+  readonly s11: bigint;
+  readonly s02: bigint;
+  /** Exact sums of y and of x over these units, in 10^-9 of the unit of each. */
+  readonly totals: readonly [y: bigint, x: bigint];
+}
+
+/** One arm of a mean or proportion that is adjusted for a covariate. */
+export interface CovariateArm {
+  /** y over all units with a value. */
+  readonly value: PowerSums;
+  /** x over those of them that have one; its n is how many. Both arms have one pivot and scale. */
+  readonly covariate: PowerSums;
+  /** y and x together over the same units, by the pivots and scales of the two above. */
+  readonly joint: JointSums;
+}

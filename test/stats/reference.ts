@@ -115,3 +115,24 @@ export const quantiles = () =>
       relative: { estimate: string; low: string | null; high: string | null } | null;
     }[]
   >("quantile.json");
+
+/** R 4.2.2, MASS 7.3-58.2: adjusted contrasts of R's own data. */
+export const covariates = () =>
+  read<
+    {
+      name: string;
+      control: { y: number[]; x: (number | null)[] };
+      variant: { y: number[]; x: (number | null)[] };
+      theta: string;
+      centre: string;
+      levelControl: string;
+      levelVariant: string;
+      standardError: string;
+      t: string;
+      df: string;
+      varianceReduction: string;
+      regression: { slope: string; difference: string };
+      interacted: string;
+      balance: { difference: string; t: string; p: string; standardised: string };
+    }[]
+  >("covariate.json");
