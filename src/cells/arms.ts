@@ -72,7 +72,8 @@ function ratioArm(numerator: PowerSums, denominator: PowerSums, d: PowerSums): A
   };
 }
 
-function partSums(cells: CellTable, variants: number): PowerSums[] {
+/** One part of a metric, rolled up over buckets; index = variant. */
+export function partSums(cells: CellTable, variants: number): PowerSums[] {
   const { pivot, scale, ...columns } = cells;
   const rows = table(columns)
     .groupby("variant")

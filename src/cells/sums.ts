@@ -26,7 +26,8 @@ export function powers(row: SumsRow): PowerSums["powers"] {
   ];
 }
 
-function joined(high: bigint, low: bigint): bigint {
+/** A sum of terms kept in two integers, in units of 2^-120. */
+export function joined(high: bigint, low: bigint): bigint {
   return (high << 60n) + low;
 }
 

@@ -13,9 +13,14 @@ export function pairsOf({ y, x }: { readonly y: readonly number[]; readonly x: r
 
 /** Both arms of an adjusted metric: pivots and scales of both together, sums as DESIGN 5 describes them. */
 export function covariateArms(control: Pairs, variant: Pairs): [CovariateArm, CovariateArm] {
-  const [yc, yt] = sumsTogether([control.map(([y]) => y), variant.map(([y]) => y)]) as [PowerSums, PowerSums];
-  const [xc, xt] = sumsTogether([xs(control), xs(variant)]) as [PowerSums, PowerSums];
-  return [armOf(control, yc, xc), armOf(variant, yt, xt)];
+  return covariateGroups([control, variant]) as [CovariateArm, CovariateArm];
+}
+
+/** The same of any groups of units, such as the buckets of the arms. */
+export function covariateGroups(groups: readonly Pairs[]): CovariateArm[] {
+  const values = sumsTogether(groups.map((pairs) => pairs.map(([y]) => y)));
+  const covariates = sumsTogether(groups.map(xs));
+  return groups.map((pairs, i) => armOf(pairs, values[i] as PowerSums, covariates[i] as PowerSums));
 }
 
 function armOf(pairs: Pairs, value: PowerSums, covariate: PowerSums): CovariateArm {
