@@ -1,8 +1,9 @@
 // Roll-ups
 export { arms } from "./arms.ts";
+export { covariateArms, jointSums } from "./joint.ts";
+
 // Exact quotients
 export { type Fraction, fraction, nearestNumber } from "./fraction.ts";
-export { covariateArms, jointSums } from "./joint.ts";
 export { NANO } from "./sums.ts";
 
 // Types
