@@ -12,8 +12,8 @@ export interface Layout {
   /** Per column: whether its values must be numbers, which then stand as v<c>. */
   readonly numeric: readonly boolean[];
   /**
-   * Per column: where it is nothing but the unit's or the event id's in every file that has it, the role and the entries
-   * of the log where it is so; it need not be stored twice. Else null.
+   * Per column: where it is nothing but the unit's, the event's or the event id's in every file that has it, the role and
+   * the entries of the log where it is so; it need not be stored twice. Else null.
    */
   readonly standIns: readonly (StandIn | null)[];
   /** Columns whose value at enrolment is a covariate. */
@@ -30,7 +30,7 @@ export interface Layout {
 }
 
 export interface StandIn {
-  readonly role: "unit" | "event_id";
+  readonly role: "unit" | "event" | "event_id";
   readonly sources: readonly number[];
 }
 
@@ -105,6 +105,7 @@ function standIn(plan: Plan, groups: readonly Pick<FileGroup, "source" | "column
   const roles = having.map((group) => {
     const ours = plan.log[group.source]?.columns;
     if (ours?.unit === column) return "unit";
+    if (ours?.event === column) return "event";
     return ours?.eventId === column ? "event_id" : null;
   });
   const [role = null] = roles;
