@@ -1,10 +1,13 @@
 // Roll-ups
+
 export { arms } from "./arms.ts";
 export { covariateArms, jointSums } from "./joint.ts";
 
 // Exact quotients
+
 export { type Fraction, fraction, nearestNumber } from "./fraction.ts";
 export { NANO } from "./sums.ts";
 
 // Types
+
 export type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";

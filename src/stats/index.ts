@@ -1,29 +1,31 @@
-// Distributions
-
 // Contrasts
+
 export { isAbsent } from "./absent.ts";
 export { armFigures } from "./arm-figures.ts";
-// Covariates
-export { type Balance, balance } from "./balance.ts";
-// More than one question
-export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
-export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
 export { contrast } from "./contrast.ts";
-export { type Adjusted, adjusted } from "./covariate.ts";
+
+// Several questions at once
+
+export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { dunnettCritical, dunnettP } from "./dunnett.ts";
+export { holm } from "./holm.ts";
+export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
+
+// Quantiles
+
+export { type QuantileContrast, quantileContrast } from "./quantile.ts";
+export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
+export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
+
+// Covariates
+
+export { type Balance, balance } from "./balance.ts";
+export { type Adjusted, adjusted } from "./covariate.ts";
 
 // Power and sizes
+
 export { type Exaggeration, exaggeration } from "./exaggeration.ts";
-// Tests of counts
-export { fisher } from "./fisher.ts";
-export { holm } from "./holm.ts";
-export { independence } from "./independence.ts";
-// Moments
-export { type Moments, moments } from "./moments.ts";
-export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
-export { normalQuantile } from "./normal-quantile.ts";
-export { pearson } from "./pearson.ts";
 export {
   beyondWorthwhile,
   detectable,
@@ -33,13 +35,25 @@ export {
   sizeForAll,
   unitsFor,
 } from "./power.ts";
-// Quantiles
-export { type QuantileContrast, quantileContrast } from "./quantile.ts";
-export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
-export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
-export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
 export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
+
+// Tests of counts
+
+export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
+export { fisher } from "./fisher.ts";
+export { independence } from "./independence.ts";
+export { pearson } from "./pearson.ts";
+
+// Moments
+
+export { type Moments, moments } from "./moments.ts";
+
+// Distributions
+
+export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
+export { normalQuantile } from "./normal-quantile.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";
 
 // Types
+
 export type { Absent, ArmFigures, Contrast, Difference, Level, Method, Relative } from "./types.ts";
