@@ -1,6 +1,4 @@
-import type { LargestShare } from "../stats/largest-share.ts";
-import type { NotDrawn } from "../stats/resampling.ts";
-import type { Tails } from "../stats/tails.ts";
+import type { LargestShare, NotDrawn, Tails } from "../stats/index.ts";
 import { count, fixed, percent, quoted } from "../words/index.ts";
 
 /** What the plan calls its units. */

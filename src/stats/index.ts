@@ -46,6 +46,7 @@ export { type Seed, seedOf } from "./generator.ts";
 export type { Histogram } from "./histogram.ts";
 export type { LargestShare } from "./largest-share.ts";
 export { type Normality, type NormalityArm, normality, normalityOfArms } from "./normality.ts";
+export { type Normality, type NormalityArm, normality, normalityOfArms } from "./normality.ts";
 export { type Randomisation, randomisation } from "./randomisation.ts";
 export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
 export type { SkewCorrected } from "./skew-corrected.ts";
