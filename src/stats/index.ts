@@ -41,11 +41,9 @@ export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, 
 
 export { armsAlike } from "./arms-alike.ts";
 export { type BootstrapT, bootstrapT } from "./bootstrap-t.ts";
-export type { BucketCells, BucketSums, PairSums } from "./bucket-cells.ts";
 export { type Seed, seedOf } from "./generator.ts";
 export type { Histogram } from "./histogram.ts";
 export type { LargestShare } from "./largest-share.ts";
-export { type Normality, type NormalityArm, normality, normalityOfArms } from "./normality.ts";
 export { type Normality, type NormalityArm, normality, normalityOfArms } from "./normality.ts";
 export { type Randomisation, randomisation } from "./randomisation.ts";
 export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
