@@ -10,4 +10,4 @@ export { NANO } from "./sums.ts";
 
 // Types
 
-export type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";
+export type { Arm, BucketCells, BucketSums, CovariateArm, JointSums, PairSums, PowerSums } from "./types.ts";

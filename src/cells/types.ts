@@ -55,3 +55,32 @@ export interface CovariateArm {
   /** y and x together over the same units, by the pivots and scales of the two above. */
   readonly joint: JointSums;
 }
+
+/** Sums of one value by bucket: n and the first two power sums about any one pivot, in any one scale. Arrays of one length. */
+export interface BucketSums {
+  readonly n: Float64Array;
+  readonly s1: Float64Array;
+  readonly s2: Float64Array;
+}
+
+/** Sums of two values (y, x) of the same units by bucket, each about a pivot and in a scale. Arrays of one length. */
+export interface PairSums {
+  readonly n: Float64Array;
+  readonly y: Float64Array;
+  readonly x: Float64Array;
+  readonly yy: Float64Array;
+  readonly yx: Float64Array;
+  readonly xx: Float64Array;
+}
+
+/** One contrast by bucket, as doubles, for resampling: both arms by the same buckets, with the same pivots and scales. */
+export type BucketCells =
+  | { readonly kind: "mean"; readonly control: BucketSums; readonly variant: BucketSums }
+  | {
+      /** y is the numerator and x the denominator, or y the value and x the covariate. */
+      readonly kind: "ratio" | "adjusted";
+      readonly pivots: readonly [y: number, x: number];
+      readonly scales: readonly [y: number, x: number];
+      readonly control: PairSums;
+      readonly variant: PairSums;
+    };

@@ -1,4 +1,5 @@
-import type { BucketSums } from "./bucket-cells.ts";
+import type { BucketCells, BucketSums } from "../cells/types.ts";
+import { bucketScores } from "./bucket-scores.ts";
 
 /** Kolmogorov's statistic from which arms count as less than alike, and at which as not alike at all: p 0.022 and 0.0007. */
 const ALIKE_UP_TO = 1.5;
@@ -23,7 +24,10 @@ const ROUNDING = 1e-9;
  * Source: Smirnov 1939 (Conover 1999, Practical Nonparametric Statistics, 6.3); blocks and limits are ours, by the
  * calibration bench.
  */
-export function armsAlike(control: BucketSums, variant: BucketSums): number {
+export function armsAlike(cells: BucketCells): number {
+  const scores = bucketScores(cells);
+  if (scores === null) return 0;
+  const { control, variant } = scores;
   const merge = blocksOf(total(control.n), total(variant.n), control.n.length);
   if (merge === null) return 0;
   const [c, t] = [blocks(control, merge.control), blocks(variant, merge.variant)];

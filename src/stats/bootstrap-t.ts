@@ -1,4 +1,5 @@
-import { type BucketCells, type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
+import type { BucketCells } from "../cells/types.ts";
+import { type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
 import { drawRows, type Studentised, studentised, sumRows } from "./draws.ts";
 import { generator, type Seed } from "./generator.ts";
 import { type Histogram, histogram } from "./histogram.ts";

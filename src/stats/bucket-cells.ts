@@ -1,31 +1,4 @@
-/** Sums of one value by bucket: n and the first two power sums about any one pivot, in any one scale. Arrays of one length. */
-export interface BucketSums {
-  readonly n: Float64Array;
-  readonly s1: Float64Array;
-  readonly s2: Float64Array;
-}
-
-/** Sums of two values (y, x) of the same units by bucket, each about a pivot and in a scale. Arrays of one length. */
-export interface PairSums {
-  readonly n: Float64Array;
-  readonly y: Float64Array;
-  readonly x: Float64Array;
-  readonly yy: Float64Array;
-  readonly yx: Float64Array;
-  readonly xx: Float64Array;
-}
-
-/** What resampling takes of one contrast: both arms' sums by the same buckets, with the same pivots and scales. */
-export type BucketCells =
-  | { readonly kind: "mean"; readonly control: BucketSums; readonly variant: BucketSums }
-  | {
-      /** y is the numerator and x the denominator, or y the value and x the covariate. */
-      readonly kind: "ratio" | "adjusted";
-      readonly pivots: readonly [number, number];
-      readonly scales: readonly [number, number];
-      readonly control: PairSums;
-      readonly variant: PairSums;
-    };
+import type { BucketCells, BucketSums, PairSums } from "../cells/types.ts";
 
 /**
  * Cells as one table for the draws, row by row, without the buckets that have no unit.

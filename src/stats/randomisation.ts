@@ -1,4 +1,5 @@
-import { armsAboutBoth, type BucketCells, tableOfBoth } from "./bucket-cells.ts";
+import type { BucketCells } from "../cells/types.ts";
+import { armsAboutBoth, tableOfBoth } from "./bucket-cells.ts";
 import { dealRows, studentised, sumRows } from "./draws.ts";
 import { generator, type Seed } from "./generator.ts";
 import { type NotDrawn, tooFew, tooManyUndefined } from "./resampling.ts";

@@ -1,4 +1,4 @@
-import type { BucketCells } from "./bucket-cells.ts";
+import type { BucketCells } from "../cells/types.ts";
 import type { Counts } from "./share.ts";
 
 /** Draws or deals for a contrast that decides, and for one that does not. */

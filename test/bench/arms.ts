@@ -1,4 +1,4 @@
-import type { BucketSums } from "../../src/stats/bucket-cells.ts";
+import type { BucketSums } from "../../src/cells/types.ts";
 import type { ShapedArm } from "../../src/stats/expansion.ts";
 
 /** A simulated arm: what the intervals take, from doubles and not from exact sums, for speed. */

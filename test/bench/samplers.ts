@@ -39,7 +39,11 @@ function distribution(name: string, mean: number, unit: (next: () => number) => 
     mean,
     sampler: (seed) => {
       const draw = unit(generator(seed));
-      return (n) => Float64Array.from({ length: n }, draw);
+      return (n) => {
+        const units = new Float64Array(n);
+        for (let i = 0; i < n; i++) units[i] = draw();
+        return units;
+      };
     },
   };
 }

@@ -1,12 +1,34 @@
 import { describe, expect, it } from "vitest";
+import type { BucketCells } from "../../src/cells/types.ts";
 import { armsAlike, blocksOf, kolmogorov } from "../../src/stats/arms-alike.ts";
+import { bucketScores } from "../../src/stats/bucket-scores.ts";
 import { simulatedArm } from "../bench/arms.ts";
 import { bernoulli, buyers, type Distribution, lognormal, normal } from "../bench/samplers.ts";
+import { cellsOf, resampled, type Unit } from "./buckets.ts";
 
 function alike(control: Distribution, nc: number, variant: Distribution, nt: number, word = 1): number {
   const arm = (distribution: Distribution, n: number, last: number) =>
     simulatedArm(distribution.sampler([word, 2, 3, last])(n), 1024).buckets;
-  return armsAlike(arm(control, nc, 4), arm(variant, nt, 5));
+  return armsAlike({ kind: "mean", control: arm(control, nc, 4), variant: arm(variant, nt, 5) });
+}
+
+const sum = (values: readonly number[]) => values.reduce((a, b) => a + b, 0);
+const squaresAboutMean = (values: readonly number[]) => sum(values.map((x) => (x - sum(values) / values.length) ** 2));
+
+/** y itself, (y - R x) / mean(x) + R with the arm's R and mean, or y - theta x, unit by unit. */
+function scoresOf(kind: BucketCells["kind"], units: readonly Unit[]): Unit[] {
+  const arms = ([0, 1] as const).map((is) => units.filter(([, isVariant]) => isVariant === is));
+  const covariance = (of: readonly Unit[], a: 2 | 3, b: 2 | 3) => {
+    const [meanA, meanB] = [sum(of.map((unit) => unit[a])) / of.length, sum(of.map((unit) => unit[b])) / of.length];
+    return sum(of.map((unit) => (unit[a] - meanA) * (unit[b] - meanB))) / (of.length - 1) / of.length;
+  };
+  const theta = sum(arms.map((of) => covariance(of, 2, 3))) / sum(arms.map((of) => covariance(of, 3, 3)));
+  return units.map(([bucket, isVariant, y, x]): Unit => {
+    const of = arms[isVariant] ?? [];
+    const [sumY, sumX] = [sum(of.map((unit) => unit[2])), sum(of.map((unit) => unit[3]))];
+    const [ratio, mean] = [sumY / sumX, sumX / of.length];
+    return [bucket, isVariant, { mean: y, ratio: (y - ratio * x) / mean + ratio, adjusted: y - theta * x }[kind], x];
+  });
 }
 
 describe("whether the arms look alike", () => {
@@ -56,6 +78,27 @@ describe("whether the arms look alike", () => {
       alike(one, 5000, other, 5000, word + 1),
     ]).flat();
     expect(found.filter((share) => share < 0.5).length).toBeGreaterThanOrEqual(50);
+  });
+
+  it.each(resampled().bootstrap)("compares what the contrast compares of each unit: $kind", ({ kind, units }) => {
+    const found = bucketScores(cellsOf(kind, units, 64));
+    const scores = scoresOf(kind, units);
+    // Pivot and scale of cells are their own; a ratio's scores come in the metric's unit.
+    const scale = kind === "ratio" ? 1 : 8;
+    for (const [arm, is] of [
+      ["control", 0],
+      ["variant", 1],
+    ] as const) {
+      const sums = found?.[arm];
+      for (let bucket = 0; bucket < 64; bucket++) {
+        const own = scores.filter(([at, isVariant]) => at === bucket && isVariant === is).map(([, , y]) => y);
+        const [n = 0, s1 = 0, s2 = 0] = [sums?.n[bucket], sums?.s1[bucket], sums?.s2[bucket]];
+        expect(n).toBe(own.length);
+        if (n === 0) continue;
+        expect(scale ** 2 * (s2 - (s1 * s1) / n)).toBeCloseTo(squaresAboutMean(own), 6);
+        if (kind === "ratio") expect(s1).toBeCloseTo(sum(own), 6);
+      }
+    }
   });
 
   it("takes a change of a tenth in a heavy-tailed metric as alike, for that moves no shape", () => {

@@ -1,5 +1,5 @@
 import { readFileSync } from "node:fs";
-import type { BucketCells, BucketSums, PairSums } from "../../src/stats/bucket-cells.ts";
+import type { BucketCells, BucketSums, PairSums } from "../../src/cells/types.ts";
 
 /** One unit: its bucket, whether it is the variant's, its value and what goes with it. */
 export type Unit = readonly [bucket: number, isVariant: 0 | 1, y: number, x: number];

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
+import type { BucketCells } from "../../src/cells/types.ts";
 import { type BootstrapT, bootstrapT } from "../../src/stats/bootstrap-t.ts";
-import type { BucketCells } from "../../src/stats/bucket-cells.ts";
 import { generator, type Seed } from "../../src/stats/generator.ts";
 import { randomisation } from "../../src/stats/randomisation.ts";
 import { isNotDrawn, type NotDrawn } from "../../src/stats/resampling.ts";
