@@ -90,22 +90,11 @@ const asText = (columns: readonly string[], skip: number): Header => ({
 
 /** The cells of the first record; none in an empty file. */
 export async function delimitedHeader(path: string, delimiter: string): Promise<Header> {
-  for await (const { line, cells } of records(atMost(LONGEST_HEADER, textOf(path)), delimiter)) {
+  for await (const { line, cells } of records(textOf(path), delimiter)) {
     if (cells === null) throw new Error("in its header a quote does not close, or more follows the closing one");
     return asText(cells, line - 1);
   }
   return asText([], 0);
-}
-
-const LONGEST_HEADER = 1 << 24;
-
-async function* atMost(characters: number, pieces: AsyncIterable<string>): AsyncGenerator<string> {
-  let left = characters;
-  for await (const piece of pieces) {
-    left -= piece.length;
-    yield piece;
-    if (left < 0) throw new Error("its header has no end; look for a quote that does not close");
-  }
 }
 
 const SAMPLE_LINES = 2_000;

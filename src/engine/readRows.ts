@@ -7,7 +7,7 @@ import { rowsPerFile } from "./ledger.ts";
 import type { OpenLog } from "./open.ts";
 import { rewritten } from "./rewrite.ts";
 import type { FileGroup } from "./source.ts";
-import { type Dialect, rows, sql, unreadableRows } from "./sql/index.ts";
+import { brokenQuotes, type Dialect, forgetRows, rows, sql, unreadableRows } from "./sql/index.ts";
 import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
 import type { Step } from "./zone.ts";
 
@@ -33,40 +33,59 @@ export async function readRows(
   signal: AbortSignal | undefined,
 ): Promise<FileGroup[]> {
   const groups: FileGroup[] = [];
-  for (const [i, found] of log.groups.entries()) {
-    const read = (group: FileGroup) =>
-      engine.run(rows(plan, layout, group, i === 0 ? "create" : "insert", zone, dialect));
-    const names = found.files.map((file) => log.files[file.index]?.name ?? "").join(", ");
-    let group = found;
+  const read = async (group: FileGroup, into: "create" | "insert") => {
+    await engine.run(rows(plan, layout, group, into, zone, dialect));
+    if (group.format !== "parquet") await engine.run(unreadableRows(group));
+  };
+  for (const [i, group] of log.groups.entries()) {
     try {
-      await read(group).catch(async (cause: unknown) => {
-        if (!isRefused(group, cause)) throw cause;
-        await dropRejects(engine);
-        group = await rewritten(group, workFolder);
-        await read(group);
-      });
+      groups.push(await readGroup(group, i === 0 ? "create" : "insert", read, workFolder, engine));
+      await dropRejects(engine);
     } catch (cause) {
       signal?.throwIfAborted();
+      const names = group.files.map((file) => log.files[file.index]?.name ?? "").join(", ");
       const told = group.files.reduce(
         (text, file) => text.replaceAll(file.path, log.files[file.index]?.name ?? ""),
         firstLine(cause, workFolder, ""),
       );
       throw new UnusableLog(`The engine could not read ${names}: ${told}`, { cause });
     }
-    groups.push(group);
-    if (group.format !== "parquet") {
-      await engine.run(unreadableRows(group));
-      await dropRejects(engine);
-    }
   }
   return groups;
 }
 
+/**
+ * One group, or a copy of it in one form where the engine's reader refuses its files or cannot be trusted with them: behind
+ * a cell whose quote closes in its middle it may take two records for one, or cut the next one elsewhere.
+ */
+async function readGroup(
+  group: FileGroup,
+  into: "create" | "insert",
+  read: (group: FileGroup, into: "create" | "insert") => Promise<void>,
+  workFolder: string,
+  engine: Engine,
+): Promise<FileGroup> {
+  const isText = group.format === "csv" || group.format === "tsv";
+  let next = into;
+  try {
+    await read(group, into);
+    if (!isText || !(await hasBrokenQuotes(engine))) return group;
+    await engine.run(forgetRows(group));
+    next = "insert";
+  } catch (cause) {
+    if (!isText || !isRefusal(cause)) throw cause;
+  }
+  await dropRejects(engine);
+  const copy = await rewritten(group, workFolder);
+  await read(copy, next);
+  return copy;
+}
+
+const hasBrokenQuotes = async (engine: Engine) =>
+  (await engine.query(brokenQuotes())).some((row) => count(row, "records") > 0);
+
 /** The reader gives up on a whole file that mixes line ends. */
-const isRefused = (group: FileGroup, cause: unknown) =>
-  (group.format === "csv" || group.format === "tsv") &&
-  cause instanceof Error &&
-  cause.message.includes("reached an invalid state");
+const isRefusal = (cause: unknown) => cause instanceof Error && cause.message.includes("reached an invalid state");
 
 async function dropRejects(engine: Engine): Promise<void> {
   await engine.run(sql`DROP TABLE IF EXISTS reject_errors`);

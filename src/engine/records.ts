@@ -11,7 +11,22 @@ export interface RawRecord {
   readonly cells: readonly string[] | null;
 }
 
-/** Records of a text that comes in pieces. Blank lines are not records; a byte-order mark is left out. */
+export const delimiterOf = (format: "csv" | "tsv" | "ndjson" | "parquet"): string => (format === "tsv" ? "\t" : ",");
+
+/** The longest record; the engine's reader has the same limit. More is a quote that does not close. */
+export const LONGEST_RECORD = 4 * 1024 * 1024;
+export class EndlessRecord extends Error {}
+
+/** Where a record does not end the engine's reader goes on somewhere behind it; where, nobody can tell. */
+export function unlessEndless(cause: unknown): null {
+  if (cause instanceof EndlessRecord) return null;
+  throw cause;
+}
+
+/**
+ * Records of a text that comes in pieces. Blank lines are not records; a byte-order mark is left out.
+ * @throws EndlessRecord when one goes on for more than LONGEST_RECORD characters
+ */
 export async function* records(chunks: AsyncIterable<string>, delimiter: string): AsyncGenerator<RawRecord> {
   let rest = "";
   let line = 1;
@@ -30,45 +45,43 @@ export async function* records(chunks: AsyncIterable<string>, delimiter: string)
       from = end.next;
     }
     rest = rest.slice(from);
+    if (rest.length > LONGEST_RECORD)
+      throw new EndlessRecord(`the record on line ${line} does not end; look for a quote that does not close`);
   }
   const last = rest.endsWith("\r") ? rest.slice(0, -1) : rest;
   if (last !== "") yield { line, text: last, cells: cells(last, delimiter) };
 }
 
-/** The cells of one record; null when its quotes are wrong. */
+/**
+ * The cells of one record; null when its quotes are wrong. One space before an opening quote and spaces after a closing
+ * one are not part of the cell, as in `1, "a" ,2`; a quote after such spaces opens the cell again.
+ */
 export function cells(record: string, delimiter: string): string[] | null {
   const found: string[] = [];
   let at = 0;
   for (;;) {
-    if (record[at] === '"') {
-      let value = "";
-      let from = at + 1;
-      for (;;) {
-        const quote = record.indexOf('"', from);
-        if (quote < 0) return null;
-        value += record.slice(from, quote);
-        if (record[quote + 1] === '"') {
-          value += '"';
-          from = quote + 2;
-          continue;
-        }
-        at = quote + 1;
-        break;
-      }
-      found.push(value);
+    const quote = openingQuote(record, at);
+    if (quote === null) {
+      const end = record.indexOf(delimiter, at);
+      found.push(end < 0 ? record.slice(at) : record.slice(at, end));
+      if (end < 0) return found;
+      at = end + 1;
+    } else {
+      const end = closingQuote(record, quote + 1);
+      if (end === null) return null;
+      found.push(unquoted(record.slice(quote, end)));
+      at = afterSpaces(record, end);
       if (at === record.length) return found;
       if (record[at] !== delimiter) return null;
       at += 1;
-    } else {
-      const end = record.indexOf(delimiter, at);
-      if (end < 0) {
-        found.push(record.slice(at));
-        return found;
-      }
-      found.push(record.slice(at, end));
-      at = end + 1;
     }
   }
+}
+
+/** Whether a record fits a header: as many cells, or more that are empty and stand at the end without quotes. */
+export function fits({ text, cells }: RawRecord, width: number, delimiter: string): boolean {
+  if (cells === null || cells.length < width) return false;
+  return text.endsWith(delimiter.repeat(cells.length - width));
 }
 
 /** Where the record that starts at `from` ends: outside quotes, at LF, CR LF or CR. Null: it goes on. */
@@ -76,13 +89,15 @@ function recordEnd(text: string, from: number, delimiter: string): { at: number;
   let at = from;
   let cellStart = true;
   while (at < text.length) {
-    const c = text[at];
-    if (c === '"' && cellStart) {
-      at = closingQuote(text, at + 1);
-      if (at < 0) return null;
-      cellStart = false;
+    const quote = cellStart ? openingQuote(text, at) : null;
+    cellStart = false;
+    if (quote !== null) {
+      const end = closingQuote(text, quote + 1);
+      if (end === null || end === text.length) return null;
+      at = end;
       continue;
     }
+    const c = text[at];
     if (c === "\n") return { at, next: at + 1 };
     if (c === "\r") return { at, next: text[at + 1] === "\n" ? at + 2 : at + 1 };
     cellStart = c === delimiter;
@@ -91,16 +106,32 @@ function recordEnd(text: string, from: number, delimiter: string): { at: number;
   return null;
 }
 
-/** The index after the quote that closes; -1 when it has not come yet. */
-function closingQuote(text: string, from: number): number {
+/** The index of the quote with which the cell at `at` begins, if it does. */
+function openingQuote(text: string, at: number): number | null {
+  const quote = text[at] === " " ? at + 1 : at;
+  return text[quote] === '"' ? quote : null;
+}
+
+/** The index after the quote that closes the cell, for good; null when it has not come yet. */
+function closingQuote(text: string, from: number): number | null {
   let at = from;
   for (;;) {
     const quote = text.indexOf('"', at);
-    if (quote < 0 || quote + 1 === text.length) return -1;
-    if (text[quote + 1] !== '"') return quote + 1;
-    at = quote + 2;
+    if (quote < 0) return null;
+    const next = afterSpaces(text, quote + 1);
+    if (text[next] !== '"') return quote + 1;
+    at = next + 1;
   }
 }
+
+function afterSpaces(text: string, from: number): number {
+  let at = from;
+  while (text[at] === " ") at += 1;
+  return at;
+}
+
+/** What stands between the outer quotes; two quotes are one, and a cell that was closed and opened again is one cell. */
+const unquoted = (quoted: string): string => quoted.slice(1, -1).replace(/" *"/g, (pair) => pair.slice(1, -1) || '"');
 
 function lines(text: string): number {
   let count = 0;

@@ -6,7 +6,7 @@ import { count, type Engine, text } from "./engine.ts";
 import type { LogFile } from "./files.ts";
 import type { Layout } from "./layout.ts";
 import { reasonText } from "./ledger.ts";
-import { records } from "./records.ts";
+import { delimiterOf, fits, records, unlessEndless } from "./records.ts";
 import type { FileGroup } from "./source.ts";
 import { type Dialect, REASON, rejectedOrdinals, rejectedTexts, rejectsByFile, sql } from "./sql/index.ts";
 import type { Step } from "./zone.ts";
@@ -80,7 +80,8 @@ async function rejectedOf(
     return readable.length === expected.rows ? readable : null;
   }
   const reasons = new Map(readable.map((row) => [row.line, row.reason]));
-  const found = await placedRows(file, group, reasons);
+  const found = await placedRows(file, group, reasons).catch(unlessEndless);
+  if (found === null) return null;
   const unreadable = found.filter((row) => row.reason === REASON.unreadable).length;
   return found.length === expected.rows && unreadable === expected.unreadable ? found : null;
 }
@@ -90,10 +91,12 @@ async function placedRows(file: LogFile, group: FileGroup, reasons: ReadonlyMap<
   const found: Rejected[] = [];
   let isHeader = true;
   let ordinal = 0;
-  for await (const { line, text, cells } of records(textOf(file.path), file.format === "tsv" ? "\t" : ",")) {
+  const delimiter = delimiterOf(file.format);
+  for await (const record of records(textOf(file.path), delimiter)) {
+    const { line, text } = record;
     if (isHeader) {
       isHeader = false;
-    } else if (cells?.length !== group.columns.length) {
+    } else if (!fits(record, group.columns.length, delimiter)) {
       found.push({ line, reason: REASON.unreadable, text });
     } else {
       ordinal += 1;

@@ -3,7 +3,7 @@ import path from "node:path";
 import { Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import { textOf } from "./compression.ts";
-import { records } from "./records.ts";
+import { delimiterOf, fits, records } from "./records.ts";
 import type { FileGroup } from "./source.ts";
 
 /**
@@ -12,7 +12,7 @@ import type { FileGroup } from "./source.ts";
  * and is rejected and counted like any other.
  */
 export async function rewritten(group: FileGroup, workFolder: string): Promise<FileGroup> {
-  const delimiter = group.format === "tsv" ? "\t" : ",";
+  const delimiter = delimiterOf(group.format);
   const files: { index: number; path: string }[] = [];
   for (const file of group.files) {
     const to = path.join(workFolder, `rewritten-${file.index}.${group.format}`);
@@ -26,7 +26,8 @@ async function* lines(file: string, delimiter: string, width: number): AsyncGene
   let block = "";
   for await (const record of records(textOf(file), delimiter)) {
     const cells = record.cells ?? Array.from({ length: width + 1 }, () => record.text);
-    block += `${cells.map(quoted).join(delimiter)}\n`;
+    const kept = fits(record, width, delimiter) ? cells.slice(0, width) : cells;
+    block += `${kept.map(quoted).join(delimiter)}\n`;
     if (block.length > BLOCK) {
       yield block;
       block = "";

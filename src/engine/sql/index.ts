@@ -8,7 +8,8 @@ export { atEnrolment, enrolmentKey, enrolments, needsEnrollingRow, seen } from "
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
 /** The stages, in order. */
-export { REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
+export { brokenQuotes } from "./read.ts";
+export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
 export { candidates, units } from "./units.ts";

@@ -1,3 +1,4 @@
+import { LONGEST_RECORD } from "../records.ts";
 import type { ColumnKind, FileGroup } from "../source.ts";
 import type { Dialect } from "./dialect.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
@@ -14,8 +15,12 @@ import { join, name, type Statement, sql } from "./sql.ts";
 const NO_DELIMITER = "\u0001";
 // Nested, since AND may look at the type of what is no JSON, which is an error.
 const IS_OBJECT = sql`CASE WHEN json_valid(line) THEN json_type(line) = 'OBJECT' ELSE FALSE END`;
+/** How many of the records that the last reading could not cut have a quote that does not close where a cell ends. */
+export const brokenQuotes = (): Statement => sql`
+  SELECT count(*) AS records FROM reject_errors WHERE error_type = 'UNQUOTED VALUE'`;
+
+const NO_CELL = "\u0001 no cell \u0001";
 const JSON_BLANKS = " \t\r";
-const LONGEST_LINE = 4 * 1024 * 1024;
 // Without it the reader takes sixteen times the longest line for each piece, more than a small memory limit holds.
 const PIECE = 16 * 1024 * 1024;
 
@@ -60,16 +65,14 @@ function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: s
     const at = group.columns.indexOf(column);
     return at < 0 ? sql`CAST(NULL AS VARCHAR) AS ${name(`c${i}`)}` : sql`r.${name(`c${at}`)} AS ${name(`c${i}`)}`;
   });
-  // The reader takes a blank line for a row where there is one column; an empty cell in quotes is one.
-  const [only, more] = group.columns;
-  const isRow = only !== undefined && more === undefined ? sql`WHERE r.c0 IS NOT NULL` : sql``;
+  // Of one column the reader takes blank lines for rows, unless what stands for NULL is something that no cell holds.
+  const none = group.columns.length === 1 ? NO_CELL : "";
   return sql`
     SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...numbered(isNumbered, sql`row_number() OVER ()`), ...picked])}
     FROM read_csv(${paths(group)}, auto_detect = false, header = true, columns = {${join(columns, ", ")}},
-      delim = ${delimiter}, quote = '"', escape = '"', nullstr = '', allow_quoted_nulls = false, strict_mode = true,
-      store_rejects = true, max_line_size = ${LONGEST_LINE}, buffer_size = ${PIECE}, skip = ${group.skip},
-      hive_partitioning = false) AS r
-    ${isRow}`;
+      delim = ${delimiter}, quote = '"', escape = '"', nullstr = ${none}, allow_quoted_nulls = false,
+      strict_mode = true, store_rejects = true, max_line_size = ${LONGEST_RECORD}, buffer_size = ${PIECE}, skip = ${group.skip},
+      hive_partitioning = false) AS r`;
 }
 
 function readJson(group: FileGroup, wanted: readonly string[], isNumbered: boolean): Statement {
@@ -125,7 +128,7 @@ function lineReader(files: readonly string[], errors: Statement): Statement {
     ", ",
   )}], auto_detect = false, header = false,
     columns = {line: 'VARCHAR'}, delim = ${NO_DELIMITER}, quote = '', escape = '', nullstr = '',
-    strict_mode = false, max_line_size = ${LONGEST_LINE}, buffer_size = ${PIECE},
+    strict_mode = false, max_line_size = ${LONGEST_RECORD}, buffer_size = ${PIECE},
     hive_partitioning = false, ${errors})`;
 }
 

@@ -179,3 +179,7 @@ export function unreadableRows(group: FileGroup): Statement {
     JOIN reject_scans AS s ON s.scan_id = e.scan_id AND s.file_id = e.file_id
     JOIN (VALUES ${list(files)}) AS f(path, file) ON f.path = s.file_path`;
 }
+
+/** Takes a group's rows out again, for it is read anew. */
+export const forgetRows = (group: FileGroup): Statement =>
+  sql`DELETE FROM rows WHERE file IN (${list(group.files.map(({ index }) => sql`${index}`))})`;
