@@ -14,6 +14,7 @@ import type { Metric, Plan } from "../../src/plan/types.ts";
 import type { Absent, Contrast } from "../../src/stats/types.ts";
 import { arbitraryLog } from "../checks/arbitrary.ts";
 import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
+import { shareArm } from "../stats/arms.ts";
 import { contrastOf, type Ends, effectOf, unmeasurable, withoutRelative } from "./make.ts";
 import { BROKEN, NEVER_USED } from "./words-never-used.ts";
 
@@ -174,7 +175,8 @@ describe("an undecidable report", () => {
         const effects = plan.metrics.flatMap((metric) =>
           plan.variants.slice(1).map(({ name }) => effectOf(metric, contrastOf(0.12, ends), name)),
         );
-        const { decision, sentence, reasons } = conclusion(plan, effects, found, reduction, []);
+        const arms = plan.metrics.map(() => plan.variants.map((_, v) => shareArm(100 + v, 1000)));
+        const { decision, sentence, reasons } = conclusion(plan, effects, found, reduction, arms);
         fc.pre(decision === "undecidable");
         for (const text of [sentence, ...reasons]) expect(text).not.toMatch(/interval|% (more|fewer)|of 100 /);
       }),
