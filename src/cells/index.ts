@@ -1,6 +1,7 @@
 // Roll-ups
 
 export { arms } from "./arms.ts";
+export { type Buckets, buckets } from "./buckets.ts";
 export { covariateArms, jointSums } from "./joint.ts";
 
 // Exact quotients
