@@ -1,7 +1,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { isAbsent } from "../../src/stats/absent.ts";
-import type { ShapedArm } from "../../src/stats/expansion.ts";
+import { expansionOf, type ShapedArm } from "../../src/stats/expansion.ts";
 import { normalCritical } from "../../src/stats/normal.ts";
 import { relative } from "../../src/stats/relative.ts";
 import { skewCorrected, skewCorrectedRelative } from "../../src/stats/skew-corrected.ts";
@@ -43,6 +43,30 @@ describe("the correction for skewness", () => {
     expect([correction.skew, correction.square, correction.constant]).toEqual([0, 0, 0]);
     // Welch's 22 degrees of freedom stand for our 24; what else is left is of the order 1 / 22^2.
     expect(Math.abs(widened(Z, correction) - tCritical(0.05, 22))).toBeLessThan(0.02);
+  });
+
+  // The formula of the docstring, term by term, where no coefficient of it is under 0.
+  it("widens the critical value by what is left of the expansion, and by the noise of an own skewness", () => {
+    const kurtotic = fc.record({
+      g: fc.double({ min: -1, max: 1, noNaN: true }),
+      k: fc.double({ min: 9, max: 50, noNaN: true }),
+    });
+    const units = fc.integer({ min: 50, max: 5000 });
+    fc.assert(
+      fc.property(kurtotic, kurtotic, units, units, share, (c, t, nc, nt, alike) => {
+        const arms = [shaped(nc, 1, c.g, c.k), shaped(nt, 1, t.g, t.k)] as const;
+        const correction = skewCorrection(...arms, alike);
+        const { skew: own, kurtosis: b, freedom: e } = expansionOf(...arms);
+        const q = 0.6 * alike * (1 - Math.min(nc, nt) / Math.max(nc, nt));
+        const g = (nc * c.g + nt * t.g) / (nc + nt);
+        const a = (1 - q) * own + (q * g * (1 / nt ** 2 - 1 / nc ** 2)) / (1 / nt + 1 / nc) ** 1.5;
+        expect(correction.skew).toBeCloseTo(a, 12);
+        const [x, square] = [1.7, a * a * Math.min(1, 2 * q)];
+        const noise = ((1 - q) * (b - 1.5 * square) * x * (2 * x * x + 1)) / 6;
+        const left = (-b * x * (x * x - 3)) / 12 + (square * x * (20 * x * x - 39)) / 216 + (e * x * (x * x + 1)) / 4;
+        expectWithin(widened(x, correction), x + noise + left, 1e-9);
+      }),
+    );
   });
 
   it("trusts the pooled shape only for arms of unlike size that look alike", () => {
