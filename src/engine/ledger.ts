@@ -73,6 +73,8 @@ const rowLineId = (unitLine: string) =>
 /** Why a row was rejected, in words; the reader of rejects.csv sees them. */
 export function reasonText(reason: number, layout: Layout): string {
   if (reason === REASON.unreadable) return "cannot be read: the cells do not fit the header";
+  if (reason === REASON.notText) return "cannot be read: not UTF-8";
+  if (reason === REASON.notObject) return "cannot be read: not a JSON object";
   if (reason === REASON.noUnit) return "no unit";
   if (reason === REASON.noTime) return "no readable time";
   const isRange = reason >= REASON.outOfRange;

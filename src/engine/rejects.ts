@@ -35,14 +35,18 @@ export async function writeRejects(to: string, log: ReadLog, engine: Engine, dia
   const out = createWriteStream(to);
   const write = lineWriter(out);
   await write(["file", "line", "reason", "text"]);
-  for (const row of await engine.query(rejectsByFile(REASON.unreadable))) {
+  for (const row of await engine.query(rejectsByFile(REASON.unreadable, REASON.notText))) {
     const index = count(row, "file");
     const file = log.files[index];
     const group = log.groups.find((one) => one.files.some((member) => member.index === index));
     if (file === undefined || group === undefined)
       throw new Error(`rejected rows of file ${index}, which was not read`);
     const own = { ...group, files: group.files.filter((member) => member.index === index) };
-    const expected = { rows: count(row, "rows"), unreadable: count(row, "unreadable") };
+    const expected = {
+      rows: count(row, "rows"),
+      unreadable: count(row, "unreadable"),
+      notText: count(row, "not_text"),
+    };
     const found = (await rejectedOf(file, own, expected, log, engine, dialect)) ?? (await withoutLines(index, engine));
     for (const one of found) {
       await write([file.name, one.line === null ? "" : String(one.line), reasonText(one.reason, log.layout), one.text]);
@@ -55,6 +59,7 @@ export async function writeRejects(to: string, log: ReadLog, engine: Engine, dia
 interface Expected {
   readonly rows: number;
   readonly unreadable: number;
+  readonly notText: number;
 }
 
 /** Null when the second reading does not find what the first one rejected: then the lines cannot be told. */
@@ -80,14 +85,23 @@ async function rejectedOf(
     return readable.length === expected.rows ? readable : null;
   }
   const reasons = new Map(readable.map((row) => [row.line, row.reason]));
-  const found = await placedRows(file, group, reasons).catch(unlessEndless);
+  const found = await placedRows(file, group, reasons, expected.notText > 0).catch(unlessEndless);
   if (found === null) return null;
-  const unreadable = found.filter((row) => row.reason === REASON.unreadable).length;
-  return found.length === expected.rows && unreadable === expected.unreadable ? found : null;
+  const of = (reason: number) => found.filter((row) => row.reason === reason).length;
+  const isAlike =
+    found.length === expected.rows &&
+    of(REASON.unreadable) === expected.unreadable &&
+    of(REASON.notText) === expected.notText;
+  return isAlike ? found : null;
 }
 
 /** Cuts the file's text into records and takes those that cannot be cut, and those whose ordinal has a reason. */
-async function placedRows(file: LogFile, group: FileGroup, reasons: ReadonlyMap<number, number>): Promise<Rejected[]> {
+async function placedRows(
+  file: LogFile,
+  group: FileGroup,
+  reasons: ReadonlyMap<number, number>,
+  hasBrokenText: boolean,
+): Promise<Rejected[]> {
   const found: Rejected[] = [];
   let isHeader = true;
   let ordinal = 0;
@@ -96,6 +110,9 @@ async function placedRows(file: LogFile, group: FileGroup, reasons: ReadonlyMap<
     const { line, text } = record;
     if (isHeader) {
       isHeader = false;
+    } else if (hasBrokenText && text.includes("\uFFFD")) {
+      // Bytes that are no UTF-8 are decoded to this sign.
+      found.push({ line, reason: REASON.notText, text });
     } else if (!fits(record, group.columns.length, delimiter)) {
       found.push({ line, reason: REASON.unreadable, text });
     } else {

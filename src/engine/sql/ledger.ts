@@ -66,9 +66,10 @@ export function countedRows(metrics: number): Statement {
   )} FROM units`;
 }
 
-/** Files with rejected rows: how many in all, and how many of them the reader could not cut into cells. */
-export const rejectsByFile = (unreadable: number): Statement => sql`
-  SELECT file, count(*) AS rows, count(*) FILTER (WHERE reason = ${unreadable}) AS unreadable
+/** Files with rejected rows: how many in all, and of the two reasons for which the reader could not cut them into cells. */
+export const rejectsByFile = (unreadable: number, notText: number): Statement => sql`
+  SELECT file, count(*) AS rows, count(*) FILTER (WHERE reason = ${unreadable}) AS unreadable,
+    count(*) FILTER (WHERE reason = ${notText}) AS not_text
   FROM rows WHERE fate = ${FATE.rejected} GROUP BY file ORDER BY file`;
 
 /** Rejected rows of a file as the first reading has them. */

@@ -8,7 +8,17 @@ import { join, name, type Statement, sql } from "./sql.ts";
 import { matches, where } from "./where.ts";
 
 /** Why a row is rejected, first that applies; REASON.notNumber + c and REASON.outOfRange + c name a column. */
-export const REASON = { none: 0, unreadable: 1, noUnit: 2, noTime: 3, notNumber: 1000, outOfRange: 2000 } as const;
+export const REASON = {
+  none: 0,
+  /** The reader could not cut the record into the header's cells, or it is no UTF-8. */
+  unreadable: 1,
+  notText: 2,
+  notObject: 3,
+  noUnit: 4,
+  noTime: 5,
+  notNumber: 1000,
+  outOfRange: 2000,
+} as const;
 
 /**
  * Stage 1, once a group of like files: one row a record of the log, typed, tested and with its first fate.
@@ -144,7 +154,7 @@ function reason(layout: Layout, dialect: Dialect): Statement {
     ];
   });
   const noTime = layout.hasTime ? sql`WHEN at_us IS NULL THEN ${REASON.noTime}` : sql``;
-  return sql`CASE WHEN NOT readable THEN ${REASON.unreadable} WHEN unit IS NULL THEN ${REASON.noUnit} ${noTime}
+  return sql`CASE WHEN NOT readable THEN ${REASON.notObject} WHEN unit IS NULL THEN ${REASON.noUnit} ${noTime}
     ${join(values, "\n")} ELSE ${REASON.none} END`;
 }
 
@@ -170,9 +180,10 @@ export function unreadableRows(group: FileGroup): Statement {
   const files = group.files.map(({ path, index }) => sql`(${path}, ${index})`);
   return sql`
     INSERT INTO rows (file, source, reason, fate, text)
-    SELECT f.file, ${group.source}, ${REASON.unreadable}, ${FATE.rejected}, e.text
+    SELECT f.file, ${group.source}, e.reason, ${FATE.rejected}, e.text
     FROM (
-      SELECT scan_id, file_id, line, line_byte_position, min(csv_line) AS text
+      SELECT scan_id, file_id, line, line_byte_position, min(csv_line) AS text,
+        CASE WHEN bool_or(error_type = 'INVALID ENCODING') THEN ${REASON.notText} ELSE ${REASON.unreadable} END AS reason
       FROM reject_errors
       GROUP BY scan_id, file_id, line, line_byte_position
     ) AS e
