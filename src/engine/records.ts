@@ -78,6 +78,9 @@ export function cells(record: string, delimiter: string): string[] | null {
   }
 }
 
+/** A cell as RFC 4180 writes it in quotes. */
+export const quoted = (cell: string): string => `"${cell.replaceAll('"', '""')}"`;
+
 /** Whether a record fits a header: as many cells, or more that are empty and stand at the end without quotes. */
 export function fits({ text, cells }: RawRecord, width: number, delimiter: string): boolean {
   if (cells === null || cells.length < width) return false;
@@ -131,7 +134,7 @@ function afterSpaces(text: string, from: number): number {
 }
 
 /** What stands between the outer quotes; two quotes are one, and a cell that was closed and opened again is one cell. */
-const unquoted = (quoted: string): string => quoted.slice(1, -1).replace(/" *"/g, (pair) => pair.slice(1, -1) || '"');
+const unquoted = (text: string): string => text.slice(1, -1).replace(/" *"/g, (pair) => pair.slice(1, -1) || '"');
 
 function lines(text: string): number {
   let count = 0;

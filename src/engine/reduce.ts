@@ -111,7 +111,7 @@ async function stages(
   });
   const perFile = await rowsPerFile(log.files.length, engine);
   rowsRead = perFile.reduce((sum, n) => sum + n, 0);
-  const lists = await readLists(plan, layout, folder, engine);
+  const lists = await readLists(plan, layout, folder, workFolder, engine);
 
   if (layout.hasEventId) {
     stage("looking for duplicates", 0.5);

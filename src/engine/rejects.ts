@@ -6,7 +6,7 @@ import { count, type Engine, text } from "./engine.ts";
 import type { LogFile } from "./files.ts";
 import type { Layout } from "./layout.ts";
 import { reasonText } from "./ledger.ts";
-import { delimiterOf, fits, records, unlessEndless } from "./records.ts";
+import { delimiterOf, fits, quoted, records, unlessEndless } from "./records.ts";
 import type { FileGroup } from "./source.ts";
 import { type Dialect, REASON, rejectedOrdinals, rejectedTexts, rejectsByFile, sql } from "./sql/index.ts";
 import type { Step } from "./zone.ts";
@@ -132,7 +132,7 @@ async function withoutLines(file: number, engine: Engine): Promise<Rejected[]> {
 /** Writes rows as RFC 4180 has them, no faster than the disk takes them. */
 function lineWriter(out: WriteStream): (cells: readonly string[]) => Promise<void> {
   return async (cells) => {
-    const line = cells.map((cell) => (/[",\r\n]/.test(cell) ? `"${cell.replaceAll('"', '""')}"` : cell)).join(",");
+    const line = cells.map((cell) => (/[",\r\n]/.test(cell) ? quoted(cell) : cell)).join(",");
     if (!out.write(`${line}\n`)) await once(out, "drain");
   };
 }

@@ -3,7 +3,7 @@ import path from "node:path";
 import { Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import { textOf } from "./compression.ts";
-import { delimiterOf, fits, records } from "./records.ts";
+import { delimiterOf, fits, quoted, records } from "./records.ts";
 import type { FileGroup } from "./source.ts";
 
 /**
@@ -36,5 +36,3 @@ async function* lines(file: string, delimiter: string, width: number): AsyncGene
   yield block;
 }
 const BLOCK = 1 << 18;
-
-const quoted = (cell: string) => `"${cell.replaceAll('"', '""')}"`;

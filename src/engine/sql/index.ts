@@ -8,7 +8,7 @@ export { atEnrolment, enrolmentKey, enrolments, needsEnrollingRow, seen } from "
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
 /** The stages, in order. */
-export { brokenQuotes } from "./read.ts";
+export { brokenQuotes, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";

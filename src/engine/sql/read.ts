@@ -15,6 +15,13 @@ import { join, name, type Statement, sql } from "./sql.ts";
 const NO_DELIMITER = "\u0001";
 // Nested, since AND may look at the type of what is no JSON, which is an error.
 const IS_OBJECT = sql`CASE WHEN json_valid(line) THEN json_type(line) = 'OBJECT' ELSE FALSE END`;
+/** Ids of a filter, from a file of one quoted cell a line. */
+export const listTable = (list: number, file: string): Statement => sql`
+  CREATE TEMP TABLE ${name(`list_${list}`)} AS
+  SELECT id
+  FROM read_csv(${file}, auto_detect = false, header = false, columns = {id: 'VARCHAR'}, delim = ',', quote = '"',
+    escape = '"', nullstr = ${NO_CELL}, hive_partitioning = false)`;
+
 /** How many of the records that the last reading could not cut have a quote that does not close where a cell ends. */
 export const brokenQuotes = (): Statement => sql`
   SELECT count(*) AS records FROM reject_errors WHERE error_type = 'UNQUOTED VALUE'`;
