@@ -46,6 +46,8 @@ describe("whether the arms look alike", () => {
     expect(blocksOf(5000, 5000, 1024)).toEqual({ control: 2, variant: 2 });
     expect(blocksOf(4000, 6000, 1024)).toEqual({ control: 3, variant: 2 });
     expect(blocksOf(500_000, 500_000, 1024)).toEqual({ control: 1, variant: 1 });
+    // 7 buckets of the smaller hold as many as 5 of the larger; 3 for 2 would be off by 6%, 4 for 3 likewise.
+    expect(blocksOf(10_000, 14_142, 1024)).toEqual({ control: 7, variant: 5 });
   });
 
   it("cannot be told where one arm has too few blocks: then they are not taken as alike", () => {
@@ -98,6 +100,36 @@ describe("whether the arms look alike", () => {
         expect(scale ** 2 * (s2 - (s1 * s1) / n)).toBeCloseTo(squaresAboutMean(own), 6);
         if (kind === "ratio") expect(s1).toBeCloseTo(sum(own), 6);
       }
+    }
+  });
+
+  it("is not so for one mean and another spread", () => {
+    const wider: Distribution = {
+      ...normal,
+      sampler: (seed) => (n) =>
+        normal
+          .sampler(seed)(n)
+          .map((x) => 1.3 * x),
+    };
+    const found = Array.from({ length: 10 }, (_, word) => alike(wider, 5000, normal, 5000, word + 1));
+    expect(Math.max(...found)).toBe(0);
+  });
+
+  // Blocks of none but the commonest value are equal, whatever their size and however that value is rounded: these samples
+  // were told apart by the last bit of n times 0.1.
+  it("does not change with where the commonest value lies", () => {
+    const moved: Distribution = {
+      ...normal,
+      sampler: (seed) => (n) =>
+        buyers(0.02, 1)
+          .sampler(seed)(n)
+          .map((x) => x + 0.1),
+    };
+    for (const [nc, nt] of [
+      [6500, 3250],
+      [9000, 1000],
+    ] as const) {
+      expect(alike(moved, nc, moved, nt)).toBe(alike(buyers(0.02, 1), nc, buyers(0.02, 1), nt));
     }
   });
 

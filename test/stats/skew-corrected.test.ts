@@ -5,7 +5,14 @@ import { expansionOf, type ShapedArm } from "../../src/stats/expansion.ts";
 import { normalCritical } from "../../src/stats/normal.ts";
 import { relative } from "../../src/stats/relative.ts";
 import { skewCorrected, skewCorrectedRelative } from "../../src/stats/skew-corrected.ts";
-import { narrowed, skewCorrection, transformed, untransformed, widened } from "../../src/stats/skew-correction.ts";
+import {
+  narrowed,
+  skewCorrection,
+  skewCorrectionAt,
+  transformed,
+  untransformed,
+  widened,
+} from "../../src/stats/skew-correction.ts";
 import { tCritical } from "../../src/stats/student-t.ts";
 import { simulatedArm } from "../bench/arms.ts";
 import { bernoulli, type Distribution, exponential } from "../bench/samplers.ts";
@@ -67,6 +74,13 @@ describe("the correction for skewness", () => {
         expectWithin(widened(x, correction), x + noise + left, 1e-9);
       }),
     );
+  });
+
+  it("turns the control's skewness for a ratio below 0: the levels are then added", () => {
+    const arm = shaped(100, 1, 3, 20);
+    // Two alike added: 2 g v^1.5 / sqrt(n) over (2 v)^1.5.
+    expectWithin(skewCorrectionAt(-1, arm, arm, 0).skew, (2 * 3) / 10 / 2 ** 1.5, 1e-12);
+    expect(skewCorrectionAt(1, arm, arm, 0)).toEqual(skewCorrection(arm, arm, 0));
   });
 
   it("trusts the pooled shape only for arms of unlike size that look alike", () => {

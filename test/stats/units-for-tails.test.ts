@@ -88,10 +88,24 @@ describe("the largest unit's share", () => {
     expect(largestShare(armFigures(meanArm(skewed)))?.ofCubes).toBeLessThan((1.2 * (10 - mean) ** 3) / cubes);
   });
 
+  it("of the cubes knows symmetric units, with and without a heavy tail", () => {
+    // 1,000 units at 1 and -1, one each at 30 and -30: 27,000 of 55,000.
+    const heavy = [...Array.from({ length: 1000 }, (_, i) => (i % 2 === 0 ? 1 : -1)), 30, -30];
+    expect(largestShare(armFigures(meanArm(heavy)))?.ofCubes).toBeGreaterThan(27 / 55);
+    expect(largestShare(armFigures(meanArm(heavy)))?.ofCubes).toBeLessThan(0.52);
+    // Heads in ten throws, each of 1,024 ways: the furthest is 5 away, the standard deviation sqrt(2.5), and the mean cube is
+    // taken as that of the standard deviation.
+    const throws = [1, 10, 45, 120, 210, 252, 210, 120, 45, 10, 1].flatMap((ways, heads) =>
+      new Array<number>(ways).fill(heads),
+    );
+    expectWithin(largestShare(armFigures(meanArm(throws)))?.ofCubes ?? null, 125 / 2.5 ** 1.5 / 1024, 1e-9);
+  });
+
   // 100 units: the limits are 0.05 and 0.20 + 2 log(100) / 100 = 0.0921. Half at -1, the rest at 1, and one far off.
   it.each([
     [3.5, "near"],
     [5, "caution"],
+    [6.3, "caution"],
     [8, "strong"],
   ])("with one unit at %d standard deviations or so: %s", (far, level) => {
     const units = Array.from({ length: 99 }, (_, i) => (i % 2 === 0 ? -1 : 1));
