@@ -1,17 +1,7 @@
 import { count, type Engine, nano, type Row, real, whole, wholeOrNull } from "./engine.ts";
 import { nanoText } from "./nano.ts";
 import { pivotAndScale } from "./pivot.ts";
-import {
-  cells,
-  classes,
-  type Dialect,
-  decimalValue,
-  EACH_BUCKET,
-  jointCells,
-  type Measured,
-  type Over,
-  type Statement,
-} from "./sql/index.ts";
+import { cells, classes, type Dialect, decimalValue, jointCells, type Measured, type Statement } from "./sql/index.ts";
 import type { CellTable, JointTable, ScoreTable } from "./types.ts";
 
 /** From values over units to tables of exact sums. */
@@ -47,14 +37,10 @@ export async function decimalMeasures(
   });
 }
 
-export async function decimalTables(
-  measures: readonly DecimalMeasure[],
-  engine: Engine,
-  over: Over = EACH_BUCKET,
-): Promise<CellTable[]> {
+export async function decimalTables(measures: readonly DecimalMeasure[], engine: Engine): Promise<CellTable[]> {
   const found = await someAtATime(
     measures.map((measure) => measure.value),
-    (some) => engine.query(cells(some, over)),
+    (some) => engine.query(cells(some)),
   );
   return measures.map((measure, i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };
@@ -73,11 +59,10 @@ export async function decimalTables(
 export async function doubleTables(
   values: readonly { readonly value: Measured; readonly scale: number }[],
   engine: Engine,
-  over: Over = EACH_BUCKET,
 ): Promise<ScoreTable[]> {
   const found = await someAtATime(
     values.map(({ value }) => value),
-    (some) => engine.query(cells(some, over)),
+    (some) => engine.query(cells(some)),
   );
   return values.map(({ scale }, i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };
@@ -92,14 +77,10 @@ export async function doubleTables(
 
 export type MeasuredPair = readonly [DecimalMeasure, DecimalMeasure];
 
-export async function jointTables(
-  pairs: readonly MeasuredPair[],
-  engine: Engine,
-  over: Over = EACH_BUCKET,
-): Promise<JointTable[]> {
+export async function jointTables(pairs: readonly MeasuredPair[], engine: Engine): Promise<JointTable[]> {
   const found = await someAtATime(
     pairs.map(([y, x]) => [y.value, x.value] as const),
-    (some) => engine.query(jointCells(some, over)),
+    (some) => engine.query(jointCells(some)),
   );
   return pairs.map(([y, x], i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };

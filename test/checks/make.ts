@@ -172,8 +172,6 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
     of,
     ratio: null,
     covariate: null,
-    choices: [],
-    ends: [],
   };
 }
 

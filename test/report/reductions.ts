@@ -122,7 +122,5 @@ function cellsOf(name: string, plan: Plan): MetricCells {
     of: noCells,
     ratio: null,
     covariate: null,
-    choices: [],
-    ends: [],
   };
 }
