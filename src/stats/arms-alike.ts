@@ -6,8 +6,8 @@ const ALIKE_UP_TO = 1.5;
 const APART_FROM = 2;
 
 /** Units in a block at least, and blocks of an arm at least. */
-const BLOCK = 8;
-const BLOCKS = 16;
+const BLOCK = 4;
+const BLOCKS = 32;
 /** How far the arms' blocks may be of different size: what is compared would differ by that alone. */
 const UNEVEN = 0.02;
 /** Sums of squares under this share of the raw one are rounding. */
@@ -16,7 +16,7 @@ const ROUNDING = 1e-9;
 /**
  * How far two arms look like samples of one distribution, 1 alike to 0 apart, from blocks of about as many units in each.
  *
- * Buckets are merged into blocks of at least 8 units; the blocks' means and the blocks' variances are compared between the
+ * Buckets are merged into blocks of at least 4 units; the blocks' means and the blocks' variances are compared between the
  * arms by the two-sample Kolmogorov-Smirnov statistic, the larger one counts. Moments cannot tell this: a sample of
  * heavy-tailed units lacks its largest ones so often that its skewness says little about its shape; its many blocks do.
  * @returns 0 as well where the arms are too small or too uneven to be told alike

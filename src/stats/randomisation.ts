@@ -42,7 +42,8 @@ export function randomisation(
 
   const next = generator(seed);
   const order = Uint32Array.from({ length: table.rows }, (_, row) => row);
-  const many = dealtToVariant(arms, table.rows);
+  const [units = 0, variantUnits = 0] = [arms[0], arms[arms.length / 2]];
+  const many = dealtToVariant(units, variantUnits, table.rows);
   const [ofVariant, ofControl] = [order.subarray(0, many), order.subarray(many)];
   const sums = new Float64Array(arms.length);
   const [controlSums, variantSums] = [sums.subarray(0, table.width), sums.subarray(table.width)];
@@ -61,7 +62,6 @@ export function randomisation(
 }
 
 /** Buckets for the variant, by its share of the units; each arm gets one. */
-function dealtToVariant(arms: Float64Array, rows: number): number {
-  const [control = 0, variant = 0] = [arms[0], arms[arms.length / 2]];
+export function dealtToVariant(control: number, variant: number, rows: number): number {
   return Math.min(rows - 1, Math.max(1, Math.round((rows * variant) / (control + variant))));
 }

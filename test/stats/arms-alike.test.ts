@@ -40,10 +40,11 @@ describe("whether the arms look alike", () => {
     expect(d([0, 0], [0, 0, 1, 1])).toBeCloseTo(0.5 * Math.sqrt(8 / 6), 12);
   });
 
-  it("makes blocks of as many units in both arms, of at least eight", () => {
+  it("makes blocks of as many units in both arms, of at least four", () => {
     expect(blocksOf(9000, 1000, 1024)).toEqual({ control: 1, variant: 9 });
     expect(blocksOf(1000, 9000, 1024)).toEqual({ control: 9, variant: 1 });
-    expect(blocksOf(5000, 5000, 1024)).toEqual({ control: 2, variant: 2 });
+    expect(blocksOf(5000, 5000, 1024)).toEqual({ control: 1, variant: 1 });
+    expect(blocksOf(4000, 4000, 1024)).toEqual({ control: 2, variant: 2 });
     expect(blocksOf(4000, 6000, 1024)).toEqual({ control: 3, variant: 2 });
     expect(blocksOf(500_000, 500_000, 1024)).toEqual({ control: 1, variant: 1 });
     // 7 buckets of the smaller hold as many as 5 of the larger; 3 for 2 would be off by 6%, 4 for 3 likewise.

@@ -1,8 +1,10 @@
 import { describe, expect, it } from "vitest";
 import type { BucketCells } from "../../src/cells/types.ts";
 import { type BootstrapT, bootstrapT } from "../../src/stats/bootstrap-t.ts";
+import { gapOfX, tableOfArms } from "../../src/stats/bucket-cells.ts";
+import { drawRows, studentised, sumRows } from "../../src/stats/draws.ts";
 import { generator, type Seed } from "../../src/stats/generator.ts";
-import { randomisation } from "../../src/stats/randomisation.ts";
+import { dealtToVariant, randomisation } from "../../src/stats/randomisation.ts";
 import { isNotDrawn, type NotDrawn } from "../../src/stats/resampling.ts";
 import { cellsOf, meanCells, resampled, type Unit } from "./buckets.ts";
 
@@ -21,6 +23,50 @@ function skewed(n: number, word: number): number[] {
   const next = generator([word, 2, 3, 4]);
   return Array.from({ length: n }, () => -Math.log((next() + 1) / 2 ** 32));
 }
+
+/** Difference and its variance of a mean, a ratio or an adjusted mean of some units. */
+function comparedUnits(kind: BucketCells["kind"], units: readonly Unit[]) {
+  const arms = ([0, 1] as const).map((is) => units.filter(([, isVariant]) => isVariant === is));
+  const mean = (values: number[]) => values.reduce((a, b) => a + b, 0) / values.length;
+  const covariance = (a: number[], b: number[]) =>
+    a.reduce((sum, x, i) => sum + (x - mean(a)) * ((b[i] ?? 0) - mean(b)), 0) / (a.length - 1);
+  const ys = arms.map((of) => of.map(([, , y]) => y));
+  const xs = arms.map((of) => of.map(([, , , x]) => x));
+  const both = [0, 1].map((arm) => [ys[arm] ?? [], xs[arm] ?? []] as const);
+  const part = (pick: (y: number[], x: number[]) => number) =>
+    both.reduce((sum, [y, x]) => sum + pick(y, x) / y.length, 0);
+  const theta = part((y, x) => covariance(y, x)) / part((_, x) => covariance(x, x));
+  const scores = both.map(([y, x]) => {
+    const ratio = mean(y) / mean(x);
+    return y.map((value, i) => {
+      const other = x[i] ?? 0;
+      return { mean: value, ratio: (value - ratio * other) / mean(x) + ratio, adjusted: value - theta * other }[kind];
+    });
+  });
+  const [c = [], t = []] = scores;
+  return { difference: mean(t) - mean(c), variance: covariance(c, c) / c.length + covariance(t, t) / t.length };
+}
+
+describe("T of a draw", () => {
+  // From the units themselves, by the definitions of METHODS 1.
+  it.each(resampled().bootstrap)("is that of the units in the buckets drawn: $kind", ({ kind, units, estimate }) => {
+    const cells = cellsOf(kind, units, 64);
+    const table = tableOfArms(cells);
+    const held = [...new Set(units.map(([bucket]) => bucket))].sort((a, b) => a - b);
+    const sums = new Float64Array(table.width);
+    sumRows(table, Uint32Array.from(held.keys()), sums);
+    const t = studentised(kind, sums.slice(), gapOfX(cells));
+    const next = generator(SEED);
+    for (let draw = 0; draw < 50; draw++) {
+      const picks = new Uint32Array(held.length);
+      drawRows(picks, held.length, next);
+      sumRows(table, picks, sums);
+      const drawn = Array.from(picks).flatMap((row) => units.filter(([bucket]) => bucket === held[row]));
+      const found = comparedUnits(kind, drawn);
+      expect(t(sums)).toBeCloseTo((found.difference - estimate) / Math.sqrt(found.variance), 8);
+    }
+  });
+});
 
 describe("the bootstrap-t interval", () => {
   // 40,000 draws against 2,000,000: the quantiles of T differ by 0.016 or so, and by 0.05 once in a thousand.
@@ -119,6 +165,13 @@ describe("the randomisation test", () => {
     const one = drawn(randomisation(meanCells(control, variant), 4000, SEED, null));
     const other = drawn(randomisation(meanCells(variant, control), 4000, SEED, null));
     expect(Math.abs(one.p - other.p)).toBeLessThan(0.04);
+  });
+
+  it("deals buckets in the shares of the units, at least one to each arm", () => {
+    expect(dealtToVariant(9000, 1000, 1024)).toBe(102);
+    expect(dealtToVariant(1000, 3000, 1000)).toBe(750);
+    expect(dealtToVariant(1_000_000, 20, 1024)).toBe(1);
+    expect(dealtToVariant(20, 1_000_000, 1024)).toBe(1023);
   });
 
   it("is never 0: a difference that no deal reaches has one over one more than the deals", () => {
