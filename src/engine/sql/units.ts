@@ -99,8 +99,9 @@ function covariate(layout: Layout, metric: Metric, m: number): Statement {
     : sql`coalesce(${name(`s${p}`)}, 0)`;
 }
 
-// A follow-up that touches no more local days than a 64-bit integer has bits: its days are bits, not a DISTINCT count.
-const BITS = 62;
+// A follow-up under so many days is counted as bits, not as a DISTINCT count: from late in the evening it touches one local
+// day more, and one more again where clocks go forward or a day is skipped; a shift by more than 62 overflows.
+const BITS = 61;
 
 function aggregate(part: PartLayout, isShort: boolean, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
   const { aggregate } = part.part;
