@@ -1,11 +1,11 @@
-import { mkdtempSync, readFileSync, rmSync, writeFileSync } from "node:fs";
+import { createHash } from "node:crypto";
+import { mkdtempSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { gzipSync } from "node:zlib";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { isWhole, textOf } from "../../src/engine/compression.ts";
-import { sql } from "../../src/engine/sql/index.ts";
-import { inEngine } from "./duck.ts";
+import { zstandardOf } from "./small.ts";
 
 let folder = "";
 let zst: Buffer = Buffer.alloc(0);
@@ -14,24 +14,9 @@ const gz = gzipSync(TEXT);
 
 beforeAll(async () => {
   folder = mkdtempSync(join(tmpdir(), "closeout-compression-"));
-  zst = await zstandardOf("SELECT line FROM small");
+  zst = await zstandardOf(TEXT);
 });
 afterAll(() => rmSync(folder, { recursive: true, force: true }));
-
-/** What DuckDB, another program, writes as Zstandard. */
-async function zstandardOf(what: "SELECT line FROM small" | "long"): Promise<Buffer> {
-  const path = join(folder, "made.csv.zst");
-  await inEngine(async (engine) => {
-    // Long: hardly compressible, several blocks of 128 KB.
-    const rows =
-      what === "long"
-        ? sql`SELECT md5(CAST(i AS VARCHAR)) AS line FROM range(20000) AS t(i)`
-        : sql`SELECT unnest(string_split(${TEXT.trimEnd()}, chr(10))) AS line`;
-    await engine.run(sql`
-      COPY (${rows}) TO ${path} (FORMAT csv, HEADER false, QUOTE '', ESCAPE '', DELIMITER '|', COMPRESSION zstd)`);
-  });
-  return readFileSync(path);
-}
 
 function file(name: string, bytes: Uint8Array): string {
   const path = join(folder, name);
@@ -112,7 +97,9 @@ describe("a compressed file", () => {
     }
   });
   it("of many blocks is whole, and not without its last byte", async () => {
-    const long = await zstandardOf("long");
+    // Hardly compressible: several blocks of 128 KB.
+    const digests = Array.from({ length: 20_000 }, (_, i) => createHash("md5").update(String(i)).digest("hex"));
+    const long = await zstandardOf(`${digests.join("\n")}\n`);
     expect(long.length).toBeGreaterThan(300_000);
     expect(await whole("log.csv.zst", long)).toBe(true);
     expect(await whole("log.csv.zst", long.subarray(0, -1))).toBe(false);

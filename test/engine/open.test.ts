@@ -1,6 +1,6 @@
 import { gzipSync } from "node:zlib";
 import { describe, expect, it } from "vitest";
-import { fares, reduced } from "./small.ts";
+import { fares, reduced, zstandardOf } from "./small.ts";
 
 const HEADER = "visitor,at,event,arm,fare";
 const ROWS = "v1,2026-03-02,search,list,1.5\nv2,2026-03-02,search,calendar,2\n";
@@ -313,5 +313,32 @@ describe("a packed file", () => {
       const run = reduced(fares({ files: '"log.*"' }), { "log.csv": `${HEADER}\n${ROWS}`, [name]: "" });
       await expect(run, name).rejects.toThrow(/ends early/);
     }
+  });
+  it("that is cut or damaged anywhere is told as such, whatever the engine makes of it", async () => {
+    const rows = Array.from({ length: 20_000 }, (_, i) => `v${i},2026-03-02,search,list,${(i * 7919) % 1000}`);
+    const gz = gzipSync(`${HEADER}\n${rows.join("\n")}\n`);
+    const zst = await zstandardOf(`${HEADER}\n${rows.join("\n")}\n`);
+    const flipped = (bytes: Buffer, at: number) => bytes.map((byte, i) => (i === at ? byte ^ 0xff : byte));
+    for (const [name, bytes] of [
+      ["log.csv.gz", gz.subarray(0, -9)],
+      ["log.csv.gz", gz.subarray(0, gz.length >> 1)],
+      ["log.csv.gz", gz.subarray(0, 30)],
+      ["log.csv.gz", flipped(gz, gz.length >> 1)],
+      ["log.csv.gz", flipped(gz, gz.length - 6)],
+      ["log.csv.gz", Buffer.from("no gzip at all")],
+      ["log.csv.zst", zst.subarray(0, -9)],
+      ["log.csv.zst", zst.subarray(0, zst.length >> 1)],
+      ["log.csv.zst", zst.subarray(0, 30)],
+      ["log.csv.zst", Buffer.from("no Zstandard at all")],
+    ] as const) {
+      const run = reduced(fares({ files: name }), { [name]: bytes });
+      await expect(run, `${name}, ${bytes.length} bytes`).rejects.toThrow(/ends early or is damaged/);
+    }
+  });
+  it("that is damaged inside a whole frame does not pass for a good one", async () => {
+    const rows = Array.from({ length: 20_000 }, (_, i) => `v${i},2026-03-02,search,list,${(i * 7919) % 1000}`);
+    const zst = await zstandardOf(`${HEADER}\n${rows.join("\n")}\n`);
+    const bytes = zst.map((byte, i) => (i === zst.length >> 1 ? byte ^ 0xff : byte));
+    await expect(reduced(fares({ files: "log.csv.zst" }), { "log.csv.zst": bytes })).rejects.toThrow(/log\.csv\.zst/);
   });
 });

@@ -94,3 +94,21 @@ async function reducedIn(folder: string, text: string, options: SmallOptions): P
     ),
   };
 }
+
+/** Text as DuckDB, another program, packs it as Zstandard. */
+export async function zstandardOf(text: string): Promise<Buffer> {
+  const folder = mkdtempSync(join(tmpdir(), "closeout-packed-"));
+  try {
+    writeFileSync(join(folder, "plain.txt"), text);
+    const instance = await DuckDBInstance.create();
+    const connection = await instance.connect();
+    await connection.run(`
+      COPY (SELECT unnest(string_split(rtrim(content, chr(10)), chr(10))) FROM read_text('${join(folder, "plain.txt")}'))
+      TO '${join(folder, "packed.csv.zst")}' (FORMAT csv, HEADER false, QUOTE '', ESCAPE '', DELIMITER '|', COMPRESSION zstd)`);
+    connection.closeSync();
+    instance.closeSync();
+    return readFileSync(join(folder, "packed.csv.zst"));
+  } finally {
+    rmSync(folder, { recursive: true, force: true });
+  }
+}
