@@ -75,6 +75,7 @@ export function reasonText(reason: number, layout: Layout): string {
   if (reason === REASON.unreadable) return "cannot be read: the cells do not fit the header";
   if (reason === REASON.notText) return "cannot be read: not UTF-8";
   if (reason === REASON.notObject) return "cannot be read: not a JSON object";
+  if (reason === REASON.tooLong) return "cannot be read: longer than 4 MB";
   if (reason === REASON.noUnit) return "no unit";
   if (reason === REASON.noTime) return "no readable time";
   const isRange = reason >= REASON.outOfRange;

@@ -90,7 +90,8 @@ const asText = (columns: readonly string[], skip: number): Header => ({
 
 /** The cells of the first record; none in an empty file. */
 export async function delimitedHeader(path: string, delimiter: string): Promise<Header> {
-  for await (const { line, cells } of records(textOf(path), delimiter)) {
+  for await (const { line, text, cells } of records(textOf(path), delimiter)) {
+    if (text.includes("\0")) throw new Error("it is not UTF-8, UTF-16 perhaps; save it as UTF-8");
     if (cells === null) throw new Error("in its header a quote does not close, or more follows the closing one");
     return asText(cells, line - 1);
   }

@@ -78,6 +78,12 @@ wrong,v2,x,2026-03-02,s,list,calendar,2,70,80
     const files = { "log.csv": `${HEADER}\n${ROWS}`, "more.csv": `"visitor,at,event,arm,fare\n${ROWS}` };
     await expect(reduced(fares({ files: '"*.csv"' }), files)).rejects.toThrow(/more\.csv.*header/s);
   });
+  it("in another encoding is told as that", async () => {
+    const bytes = Buffer.from(`\uFEFF${HEADER}\n${ROWS}`, "utf16le");
+    await expect(reduced(fares(), { "log.csv": bytes })).rejects.toThrow(
+      /log\.csv cannot be read as csv: it is not UTF-8/,
+    );
+  });
   it("of one column is read as such, and blank lines are not rows there either", async () => {
     const plan = fares({ rest: "" }).replace(
       "variants:",

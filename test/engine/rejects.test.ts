@@ -148,6 +148,14 @@ describe("rejects.csv", () => {
 });
 
 describe("a record that does not end", () => {
+  it("in one cell of more than 4 MB is one row that cannot be read, and the file goes on", async () => {
+    for (const quote of ["", '"']) {
+      const text = `${HEADER}\n${GOOD.replace("search", `${quote}${"s".repeat(5_000_000)}${quote}`)}\n${OTHER}\n`;
+      const found = await reduced(fares(), { "log.csv": text });
+      expect([found.rows, found.arms]).toEqual([{ rejected: 1, "in-follow-up": 1 }, [["0: 0", "1: 2"]]]);
+      expect(found.rejects).toMatch(/^log\.csv,,cannot be read: longer than 4 MB,/);
+    }
+  });
   it("stops the run with its line: nobody knows where the file goes on", async () => {
     const rows = Array.from({ length: 250_000 }, (_, i) => `v${i},2026-03-02,s,list,1`).join("\n");
     const text = `${HEADER}\n${GOOD}\nv9,2026-03-02,"s,list,1\n${rows}\n`;

@@ -16,6 +16,7 @@ export const REASON = {
   notObject: 3,
   noUnit: 4,
   noTime: 5,
+  tooLong: 6,
   notNumber: 1000,
   outOfRange: 2000,
 } as const;
@@ -183,7 +184,8 @@ export function unreadableRows(group: FileGroup): Statement {
     SELECT f.file, ${group.source}, e.reason, ${FATE.rejected}, e.text
     FROM (
       SELECT scan_id, file_id, line, line_byte_position, min(csv_line) AS text,
-        CASE WHEN bool_or(error_type = 'INVALID ENCODING') THEN ${REASON.notText} ELSE ${REASON.unreadable} END AS reason
+        CASE WHEN bool_or(error_type = 'INVALID ENCODING') THEN ${REASON.notText}
+          WHEN bool_or(error_type = 'LINE SIZE OVER MAXIMUM') THEN ${REASON.tooLong} ELSE ${REASON.unreadable} END AS reason
       FROM reject_errors
       GROUP BY scan_id, file_id, line, line_byte_position
     ) AS e
