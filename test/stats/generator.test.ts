@@ -44,6 +44,11 @@ describe("the seed of the draws", () => {
     expect(fnv1a(bytes(text))).toBe(hash);
   });
 
+  // Python 3: FNV-1a over f"{word}bootstrap".encode() and struct.pack("<q", value) of each number.
+  it("is of the numbers as 64 bits, little end first, on every machine", () => {
+    expect(seedOf("bootstrap", [[1n, 2n, 3n], [-1n]])).toEqual([3190779099, 331296018, 1694214369, 3636723120]);
+  });
+
   it("differs by use, by any number and by the order of numbers", () => {
     const seeds = [
       seedOf("bootstrap", [[1n, 2n, 3n]]),
