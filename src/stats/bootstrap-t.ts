@@ -1,10 +1,13 @@
 import type { BucketCells } from "../cells/types.ts";
+import { isAbsent } from "./absent.ts";
 import { type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
 import { drawRows, type Studentised, studentised, sumRows } from "./draws.ts";
 import { generator, type Seed } from "./generator.ts";
 import { type Histogram, histogram } from "./histogram.ts";
+import { relative } from "./relative.ts";
 import { type NotDrawn, tooFew, tooManyUndefined } from "./resampling.ts";
 import type { Counts } from "./share.ts";
+import type { Absent, Level, Relative } from "./types.ts";
 
 /** Shares of the units at which the distribution is drawn, so that its way to the normal curve is seen. */
 const SHARES = [1 / 16, 1 / 4, 1] as const;
@@ -14,6 +17,9 @@ const UNITS_AT_LEAST = 20;
 export interface BootstrapT {
   readonly low: number;
   readonly high: number;
+  /** T*(alpha/2) and T*(1 - alpha/2), what stands for -z and z. */
+  readonly lowerQuantile: number;
+  readonly upperQuantile: number;
   readonly draws: number;
   /** Draws that have no T; left out. */
   readonly undefinedDraws: number;
@@ -57,9 +63,12 @@ export function bootstrapT(
 
   const { estimate, standardError } = difference;
   const rank = Math.max(1, Math.floor((all.length + 1) * (alpha / 2)));
+  const [lowerQuantile, upperQuantile] = [all[rank - 1] as number, all[all.length - rank] as number];
   return {
-    low: estimate - standardError * (all[all.length - rank] as number),
-    high: estimate - standardError * (all[rank - 1] as number),
+    low: estimate - standardError * upperQuantile,
+    high: estimate - standardError * lowerQuantile,
+    lowerQuantile,
+    upperQuantile,
     draws,
     undefinedDraws,
     drawn: found.map(({ share, values }) => ({
@@ -67,6 +76,29 @@ export function bootstrapT(
       histogram: values === null || tooManyUndefined(draws - values.length, draws) ? null : histogram(values),
     })),
   };
+}
+
+/**
+ * Relative difference by the same quantiles: all r - 1 for which (level_t - r level_c) / sqrt(v_t + r^2 v_c) lies between
+ * them. It excludes 0 exactly when the difference's interval does; at other r the quantiles, drawn at 1, are an
+ * approximation.
+ * @returns as Fieller's interval with the larger of both quantiles' sizes; `zero-variance` where both lie on one side of 0
+ *
+ * Source: Fieller 1954, JRSS B 16, 175-185.
+ */
+export function bootstrapRelative(
+  control: Level,
+  variant: Level,
+  { lowerQuantile, upperQuantile }: Pick<BootstrapT, "lowerQuantile" | "upperQuantile">,
+): Relative | Absent {
+  if (!(lowerQuantile < 0 && upperQuantile > 0)) return { absent: "zero-variance" };
+  const [fromUpper, fromLower] = [
+    relative(control, variant, upperQuantile),
+    relative(control, variant, -lowerQuantile),
+  ];
+  if (isAbsent(fromUpper)) return fromUpper;
+  if (isAbsent(fromLower)) return fromLower;
+  return { estimate: fromUpper.estimate, low: fromUpper.low, high: fromLower.high };
 }
 
 /** T of each draw of `many` buckets, sorted; without the undefined ones. */

@@ -40,7 +40,7 @@ export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, 
 // The normal approximation
 
 export { armsAlike } from "./arms-alike.ts";
-export { type BootstrapT, bootstrapT } from "./bootstrap-t.ts";
+export { type BootstrapT, bootstrapRelative, bootstrapT } from "./bootstrap-t.ts";
 export { type Seed, seedOf } from "./generator.ts";
 export type { Histogram } from "./histogram.ts";
 export type { LargestShare } from "./largest-share.ts";

@@ -1,12 +1,15 @@
 import { describe, expect, it } from "vitest";
 import type { BucketCells } from "../../src/cells/types.ts";
-import { type BootstrapT, bootstrapT } from "../../src/stats/bootstrap-t.ts";
+import { type BootstrapT, bootstrapRelative, bootstrapT } from "../../src/stats/bootstrap-t.ts";
 import { gapOfX, tableOfArms } from "../../src/stats/bucket-cells.ts";
 import { drawRows, studentised, sumRows } from "../../src/stats/draws.ts";
 import { generator, type Seed } from "../../src/stats/generator.ts";
 import { dealtToVariant, randomisation } from "../../src/stats/randomisation.ts";
+import { relative } from "../../src/stats/relative.ts";
 import { isNotDrawn, type NotDrawn } from "../../src/stats/resampling.ts";
 import { cellsOf, meanCells, resampled, type Unit } from "./buckets.ts";
+import { present } from "./expect.ts";
+import { levelFrom } from "./levels.ts";
 
 const SEED: Seed = [1, 2, 3, 4];
 
@@ -83,6 +86,18 @@ describe("the bootstrap-t interval", () => {
     const [one, other] = [interval(meanCells(control, variant)), interval(meanCells(variant, control))];
     expect(other.low).toBeCloseTo(-one.high, 12);
     expect(other.high).toBeCloseTo(-one.low, 12);
+  });
+
+  it("has a relative interval that excludes 0 with it, and is Fieller's where the quantiles are those of z", () => {
+    const [c, t] = [levelFrom(1000, 10, 4), levelFrom(800, 10.5, 5)];
+    const of = (lowerQuantile: number, upperQuantile: number) =>
+      present(bootstrapRelative(c, t, { lowerQuantile, upperQuantile }));
+    expect(of(-1.96, 1.96)).toEqual(present(relative(c, t, 1.96)));
+    // D / SE is 0.5 / sqrt(0.016 + 0.03125) = 2.30.
+    expect(of(-1.5, 2.2).low).toBeGreaterThan(0);
+    expect(of(-1.5, 2.4).low).toBeLessThan(0);
+    expect(of(-1.5, 2.4).high).toBeLessThan(of(-1.96, 2.4).high ?? 0);
+    expect(bootstrapRelative(c, t, { lowerQuantile: 0.1, upperQuantile: 2 })).toEqual({ absent: "zero-variance" });
   });
 
   it("repeats itself, and is another one from another seed", () => {
