@@ -61,14 +61,29 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
       const isNamed = id !== "not-enrolled" && id !== "unknown-variant";
       return { id, units: sumOf(own, "units"), byVariant: isNamed ? byVariant(plan, own, "units") : null };
     }),
-    rejectReasons: (await engine.query(rowsByReason()))
-      .map((row) => ({ reason: reasonText(count(row, "reason"), layout), rows: count(row, "rows") }))
-      .sort((a, b) => b.rows - a.rows || (a.reason < b.reason ? -1 : 1)),
+    rejectReasons: commonReasons(await engine.query(rowsByReason()), layout),
   };
 }
 
 const rowLineId = (unitLine: string) =>
   unitLine.startsWith("filter:") ? `unit-filter:${unitLine.slice("filter:".length)}` : `unit-${unitLine}`;
+
+/**
+ * Rejected rows by reason, commonest first. A record that cannot be read is one reason: what is wrong with it is told in
+ * other words for each format, and the same rows must be told alike in any.
+ */
+function commonReasons(rows: readonly Row[], layout: Layout): { reason: string; rows: number }[] {
+  const counts = new Map<string, number>();
+  for (const row of rows) {
+    const reason = count(row, "reason");
+    const words = UNREADABLE.includes(reason) ? "cannot be read" : reasonText(reason, layout);
+    counts.set(words, (counts.get(words) ?? 0) + count(row, "rows"));
+  }
+  return [...counts]
+    .map(([reason, found]) => ({ reason, rows: found }))
+    .sort((a, b) => b.rows - a.rows || (a.reason < b.reason ? -1 : 1));
+}
+const UNREADABLE: readonly number[] = [REASON.unreadable, REASON.notText, REASON.notObject, REASON.tooLong];
 
 /** Why a row was rejected, in words; the reader of rejects.csv sees them. */
 export function reasonText(reason: number, layout: Layout): string {

@@ -45,8 +45,14 @@ function isNearest(found: number, value: bigint, by: bigint): boolean {
     const off = (double: number) =>
       distance(double, value, by) * (common / 2n ** BigInt(Math.max(0, -exact(double)[1])));
     if (off(found) !== off(other)) return off(found) < off(other);
-    return (BigInt(Math.abs(found / 2 ** Math.floor(Math.log2(Math.abs(found)))) * 2 ** 52) & 1n) === 0n;
+    return (BigInt((Math.abs(found) / powerUnder(Math.abs(found))) * 2 ** 52) & 1n) === 0n;
   });
+}
+
+/** The largest power of two that is not over a double; log2 rounds up just under one. */
+function powerUnder(size: number): number {
+  const power = 2 ** Math.floor(Math.log2(size));
+  return power > size ? power / 2 : power;
 }
 
 describe("a quotient of whole numbers", () => {
@@ -69,6 +75,7 @@ describe("a quotient of whole numbers", () => {
     [1n, 3n, 1 / 3],
     [-1n, 3n, -1 / 3],
     [0n, 7n, 0],
+    [18014398509481981n, 1n, 18014398509481980],
     [10n ** 38n, 10n ** 38n, 1],
     [1n, 10n ** 38n, 1e-38],
     [10n ** 38n, 1n, 1e38],
