@@ -82,7 +82,7 @@ export function bootstrapT(
  * Relative difference by the same quantiles: all r - 1 for which (level_t - r level_c) / sqrt(v_t + r^2 v_c) lies between
  * them. It excludes 0 exactly when the difference's interval does; at other r the quantiles, drawn at 1, are an
  * approximation.
- * @returns as Fieller's interval with the larger of both quantiles' sizes; `zero-variance` where both lie on one side of 0
+ * @returns as Fieller's interval with the larger of both quantiles' sizes
  *
  * Source: Fieller 1954, JRSS B 16, 175-185.
  */
@@ -91,14 +91,17 @@ export function bootstrapRelative(
   variant: Level,
   { lowerQuantile, upperQuantile }: Pick<BootstrapT, "lowerQuantile" | "upperQuantile">,
 ): Relative | Absent {
-  if (!(lowerQuantile < 0 && upperQuantile > 0)) return { absent: "zero-variance" };
-  const [fromUpper, fromLower] = [
-    relative(control, variant, upperQuantile),
-    relative(control, variant, -lowerQuantile),
-  ];
-  if (isAbsent(fromUpper)) return fromUpper;
-  if (isAbsent(fromLower)) return fromLower;
-  return { estimate: fromUpper.estimate, low: fromUpper.low, high: fromLower.high };
+  const [low, high] = [endAt(upperQuantile), endAt(lowerQuantile)];
+  if (isAbsent(low)) return low;
+  if (isAbsent(high)) return high;
+  return { estimate: low.estimate, low: low.end, high: high.end };
+
+  /** r - 1 with T at this quantile: below the estimate for one above 0. */
+  function endAt(quantile: number): { readonly estimate: number; readonly end: number | null } | Absent {
+    const found = relative(control, variant, Math.abs(quantile));
+    if (isAbsent(found)) return found;
+    return { estimate: found.estimate, end: quantile > 0 ? found.low : found.high };
+  }
 }
 
 /** T of each draw of `many` buckets, sorted; without the undefined ones. */
