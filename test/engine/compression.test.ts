@@ -96,6 +96,14 @@ describe("a compressed file", () => {
       expect(await whole("log.csv.zst", BY_HAND.subarray(0, length)), String(length)).toBe(false);
     }
   });
+  it("with a checksum is whole with all four bytes of it", async () => {
+    const withChecksum = Buffer.concat([BY_HAND, Buffer.from([1, 2, 3, 4])]);
+    withChecksum[4] = 0x24;
+    expect(await whole("log.csv.zst", withChecksum)).toBe(true);
+    for (const missing of [1, 2, 3, 4]) {
+      expect(await whole("log.csv.zst", withChecksum.subarray(0, -missing)), String(missing)).toBe(false);
+    }
+  });
   it("of many blocks is whole, and not without its last byte", async () => {
     // Hardly compressible: several blocks of 128 KB.
     const digests = Array.from({ length: 20_000 }, (_, i) => createHash("md5").update(String(i)).digest("hex"));

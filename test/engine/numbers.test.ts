@@ -232,7 +232,18 @@ describe("the double of a decimal", () => {
   it("is the nearest one where dividing the digits would round twice, and at the ends", async () => {
     // 2^53 is the last whole number up to which all are doubles: around it the two ways part.
     const around = (nano: bigint) => [-2n, -1n, 0n, 1n, 2n].flatMap((by) => [nano + by, -(nano + by)]);
-    const ends = [0n, 1n, 2n ** 53n, 9_007_199n * 10n ** 9n, 2n ** 60n, 10n ** 27n, 10n ** 38n - 3n].flatMap(around);
+    // DuckDB 1.5.6 rounds the first two of them twice, on its own way from decimal to double.
+    const ends = [
+      853_959_796_086_080_320_065_610_527n,
+      953_833_069_312_377_814_158_884_176_734n,
+      0n,
+      1n,
+      2n ** 53n,
+      9_007_199n * 10n ** 9n,
+      2n ** 60n,
+      10n ** 27n,
+      10n ** 38n - 3n,
+    ].flatMap(around);
     expect(await wrongDoubles([...ends.filter((nano) => nano < 10n ** 38n && nano > -(10n ** 38n))])).toEqual([]);
   });
   it("is written so that it comes back, but for the sign of zero", async () => {

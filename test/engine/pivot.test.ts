@@ -76,6 +76,16 @@ describe("pivot and scale", () => {
       { numRuns: 500 },
     );
   });
+  it.each([
+    [[1, 9], 1, 8],
+    [[1, 2], 1, 1],
+    [[1, 1.5], 1.25, 0.25],
+    [[1, 9.000000001], 1, 16],
+    [[0, 0.000000001], 0, 2 ** -29], // 10^-9 lies between 2^-30 and 2^-29
+    [[-7, -8], -7, 1],
+  ])("of %j are %s and %s", (values, pivot, scale) => {
+    expect(of(values)).toEqual({ pivot: BigInt(Math.round(pivot * 1e9)), scale });
+  });
   it("are the same for any order of the classes", () => {
     fc.assert(
       fc.property(sample, fc.integer({ min: 0, max: 1_000 }), (values, by) => {
