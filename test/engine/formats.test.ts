@@ -192,6 +192,16 @@ describe("the same log", () => {
     ],
     ["turned around", "log.csv", { "log.csv": csv([...ROWS].reverse()) }],
     [
+      "split over files that end their lines otherwise",
+      '"*.csv"',
+      {
+        "a.csv": csv(ROWS.slice(0, 15)),
+        "b.csv": delimited(ROWS.slice(15, 30), ",", "\r\n"),
+        "c.csv": delimited(ROWS.slice(30, 45), ",", "\r"),
+        "d.csv": csv(ROWS.slice(45)),
+      },
+    ],
+    [
       "split over files of every form",
       '["*.csv", "b.*", "c/*"]',
       {

@@ -301,6 +301,14 @@ describe("Parquet", () => {
     );
     expect(found.arms).toEqual([["1: 4.5", "1: 6"]]);
   });
+  it("in a folder whose name looks like a pattern is the one that is read", async () => {
+    const select = made("*", TWO);
+    const files = { "d[1]/log.csv": `${HEADER}\n${ROWS}`, "d1/log.csv": `${HEADER}\n${ROWS}` };
+    const found = await reduced(fares({ files: '["d[1]/log.csv", "e*f/log.parquet"]' }), files, {
+      parquet: { "e*f/log.parquet": select, "exf/log.parquet": made("*", TWO.replaceAll("2)", "9)")) },
+    });
+    expect([found.arms, found.rejects]).toEqual([[["1: 3", "1: 4"]], ""]);
+  });
   it("that is cut short cannot be read", async () => {
     await expect(reduced(plan(), { "log.parquet": "PAR1 and no more" })).rejects.toThrow(
       /log\.parquet cannot be read as parquet/,

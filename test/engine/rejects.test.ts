@@ -156,9 +156,12 @@ describe("a record that does not end", () => {
       expect(found.rejects).toMatch(/^log\.csv,,cannot be read: longer than 4 MB,/);
     }
   });
-  it("stops the run with its line: nobody knows where the file goes on", async () => {
+  it.each([
+    ["never", ""],
+    ["far below", 'v8,2026-03-02,s",list,1\n'],
+  ])("but %s, stops the run with its line: nobody knows where the file goes on", async (_, end) => {
     const rows = Array.from({ length: 250_000 }, (_, i) => `v${i},2026-03-02,s,list,1`).join("\n");
-    const text = `${HEADER}\n${GOOD}\nv9,2026-03-02,"s,list,1\n${rows}\n`;
+    const text = `${HEADER}\n${GOOD}\nv9,2026-03-02,"s,list,1\n${rows}\n${end}${OTHER}\n`;
     await expect(reduced(fares(), { "log.csv": text })).rejects.toThrow(
       /log\.csv: the record on line 3 does not end; look for a quote/,
     );

@@ -29,17 +29,18 @@ function keyOf(key: Key): Statement {
 /**
  * Stage 4: the units seen, and the key of the row that enrols each.
  * Reads   rows
- * Writes  seen: unit, key (NULL: no row enrols it), named (a bit per variant of the plan that its rows name), rows, e<i>
+ * Writes  seen: unit, key (NULL: no row enrols it), switched (whether its rows name two variants of the plan), rows, e<i>
  *         (whether some row meets unit filter condition i)
  */
 export function seen(plan: Plan, layout: Layout, key: Key): Statement {
   const flags = layout.flags.map((_, i) => sql`bool_or(${name(`w${i}`)}) AS ${name(`e${i}`)}`);
+  const ofPlan = sql`variant < ${plan.variants.length}`;
   return sql`
     CREATE TEMP TABLE seen AS
     SELECT ${list([
       sql`unit`,
       sql`min(${keyOf(key)}) FILTER (WHERE enrols) AS key`,
-      sql`bit_or(CASE WHEN variant < ${plan.variants.length} THEN CAST(1 AS BIGINT) << variant ELSE 0 END) AS named`,
+      sql`coalesce(min(variant) FILTER (WHERE ${ofPlan}) < max(variant) FILTER (WHERE ${ofPlan}), FALSE) AS switched`,
       sql`count(*) AS rows`,
       ...flags,
     ])}
@@ -131,7 +132,6 @@ export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigin
         sql`s.*`,
         sql`CAST(s.key // ${key.places} AS BIGINT) + ${key.baseUs} AS enrolled_us`,
         sql`CAST(s.key % ${key.places} AS SMALLINT) AS variant`,
-        sql`bit_count(named) > 1 AS switched`,
         ...(usesEnrolment ? [sql`a.* EXCLUDE (unit)`] : []),
       ])}
       FROM seen AS s ${usesEnrolment ? sql`LEFT JOIN at_enrolment AS a ON a.unit = s.unit` : sql``}

@@ -22,9 +22,15 @@ export const listTable = (list: number, file: string): Statement => sql`
   FROM read_csv(${file}, auto_detect = false, header = false, columns = {id: 'VARCHAR'}, delim = ',', quote = '"',
     escape = '"', nullstr = ${NO_CELL}, hive_partitioning = false)`;
 
-/** How many of the records that the last reading could not cut have a quote that does not close where a cell ends. */
+/**
+ * How many of the records that the last reading could not cut have a quote that does not close where a cell ends, or go on
+ * over so many lines that theirs will not.
+ */
 export const brokenQuotes = (): Statement => sql`
-  SELECT count(*) AS records FROM reject_errors WHERE error_type = 'UNQUOTED VALUE'`;
+  SELECT count(*) AS records
+  FROM reject_errors
+  WHERE error_type = 'UNQUOTED VALUE'
+    OR error_type = 'LINE SIZE OVER MAXIMUM' AND (contains(csv_line, chr(10)) OR contains(csv_line, chr(13)))`;
 
 const NO_CELL = "\u0001 no cell \u0001";
 const JSON_BLANKS = " \t\r";
