@@ -1,6 +1,6 @@
 import type { Arm } from "../cells/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrast } from "../stats/index.ts";
+import { contrast, normalCritical } from "../stats/index.ts";
 import { arm } from "./effects.ts";
 import { levelsInWords } from "./levels.ts";
 import { told } from "./told.ts";
@@ -19,7 +19,11 @@ export function betweenSentence(
 ): string {
   const m = plan.metrics.indexOf(metric);
   const index = (name: string) => plan.variants.findIndex((variant) => variant.name === name);
-  const found = contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), 1 - plan.decision.confidence);
+  const found = contrast(
+    arm(arms, m, index(other)),
+    arm(arms, m, index(best)),
+    normalCritical(1 - plan.decision.confidence),
+  );
   const effect: Effect = {
     metric: metric.name,
     role: "secondary",

@@ -1,30 +1,37 @@
 import type { Arm } from "../cells/types.ts";
 import type { Metric, Plan, Variant } from "../plan/types.ts";
-import { bonferroniP, contrast } from "../stats/index.ts";
+import { contrast } from "../stats/index.ts";
+import { criticalOf, pOfVariants, type Variances, variancesOf } from "./critical.ts";
 import type { Effect } from "./types.ts";
 import { placed } from "./zones.ts";
 
 /**
  * Every metric x every variant against the control, in plan order, with its zone.
  *
- * What decides (primaries, guardrails) is held at alpha / k for k variants against one control, Bonferroni, so that all
- * their intervals hold at once; secondary metrics at alpha, pointwise. Source: Dunn 1961, JASA 56, 52-64.
+ * What decides (primaries, guardrails) has intervals that hold for all variants at once; secondary metrics have
+ * pointwise ones.
  * @param arms per metric, per variant, both in plan order
  */
 export function effects(plan: Plan, arms: readonly (readonly Arm[])[]): Effect[] {
   const control = plan.variants.findIndex((variant) => variant.isControl);
-  return plan.metrics.flatMap((metric, m) =>
-    plan.variants.flatMap((variant, v) =>
-      v === control ? [] : [effect(plan, metric, variant, arm(arms, m, control), arm(arms, m, v))],
-    ),
-  );
+  return plan.metrics.flatMap((metric, m) => {
+    const all = plan.variants.map((_, v) => arm(arms, m, v));
+    const variances = variancesOf(arm(arms, m, control), all.toSpliced(control, 1));
+    return plan.variants.flatMap((variant, v) =>
+      v === control ? [] : [effect(plan, metric, variant, arm(arms, m, control), arm(arms, m, v), variances)],
+    );
+  });
 }
 
-function effect(plan: Plan, metric: Metric, variant: Variant, control: Arm, treated: Arm): Effect {
-  const variants = plan.variants.length - 1;
-  const decides = metric.role !== "secondary";
-  const alpha = 1 - plan.decision.confidence;
-  const found = contrast(control, treated, decides ? alpha / variants : alpha);
+function effect(
+  plan: Plan,
+  metric: Metric,
+  variant: Variant,
+  control: Arm,
+  treated: Arm,
+  variances: Variances,
+): Effect {
+  const found = contrast(control, treated, criticalOf(plan, metric, variances));
   const { p } = found.difference;
   return {
     metric: metric.name,
@@ -33,7 +40,7 @@ function effect(plan: Plan, metric: Metric, variant: Variant, control: Arm, trea
     variant: variant.name,
     control: controlOf(plan).name,
     contrast: found,
-    pAdjusted: decides && p !== null ? bonferroniP(p, variants) : null,
+    pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),
     ...placed(metric, found),
   };
 }

@@ -5,7 +5,7 @@ import { asDifference, difference, estimateOf, spreadOf } from "./difference.ts"
 import { fewEvents, hasFewEvents } from "./few-events.ts";
 import { level } from "./level.ts";
 import { newcombe } from "./newcombe.ts";
-import { normalCritical } from "./normal.ts";
+import { normalUpperTail } from "./normal.ts";
 import { relative } from "./relative.ts";
 import { type Counts, counts } from "./share.ts";
 import type { Absent, Contrast, Level, Method } from "./types.ts";
@@ -22,14 +22,14 @@ type Compared = Omit<Contrast, "control" | "variant">;
  *
  * Which method counts, first that applies: score (a proportion with under 10 successes or failures in an arm), Welch
  * (means and ratios with under 200 units in an arm), normal.
- * @param alpha in (0, 1): low and high are held at it, whatever number of contrasts it was divided by; z and p are of
- *   this contrast alone
+ * @param critical above 0, on the normal's scale, of one contrast or of several at once: low and high are held at it, and
+ *   Welch takes t(df) at the same tail; z and p are of this contrast alone
  */
-export function contrast(control: Arm, variant: Arm, alpha: number): Contrast {
-  return { control: armFigures(control), variant: armFigures(variant), ...compared(control, variant, alpha) };
+export function contrast(control: Arm, variant: Arm, critical: number): Contrast {
+  return { control: armFigures(control), variant: armFigures(variant), ...compared(control, variant, critical) };
 }
 
-function compared(control: Arm, variant: Arm, alpha: number): Compared {
+function compared(control: Arm, variant: Arm, critical: number): Compared {
   const [c, t] = [level(control), level(variant)];
   const [ofControl, ofVariant] = [countsOf(control), countsOf(variant)];
   const isShare = ofControl !== null && ofVariant !== null;
@@ -40,21 +40,21 @@ function compared(control: Arm, variant: Arm, alpha: number): Compared {
   if (isAbsent(c) || isAbsent(t)) {
     const absents = [c, t].filter(isAbsent);
     const why = absents.find(({ absent }) => absent === "no-units") ?? absents[0] ?? { absent: "no-units" };
-    return withoutInterval(null, method, why, alpha);
+    return withoutInterval(null, method, why, critical);
   }
-  if (few) return byScore(c, t, ofControl, ofVariant, alpha);
-  if (small) return byWelch(c, t, alpha);
-  return byNormal(c, t, isShare ? { control: ofControl, variant: ofVariant } : null, alpha);
+  if (few) return byScore(c, t, ofControl, ofVariant, critical);
+  if (small) return byWelch(c, t, critical);
+  return byNormal(c, t, isShare ? { control: ofControl, variant: ofVariant } : null, critical);
 }
 
 function byNormal(
   c: Level,
   t: Level,
   shares: { readonly control: Counts; readonly variant: Counts } | null,
-  alpha: number,
+  critical: number,
 ): Compared {
-  const found = difference(c, t, alpha);
-  if (isAbsent(found)) return withoutInterval(estimateOf(c, t), "normal", found, alpha);
+  const found = difference(c, t, critical);
+  if (isAbsent(found)) return withoutInterval(estimateOf(c, t), "normal", found, critical);
   return {
     difference: asDifference(found, "normal"),
     relative: relative(c, t, found.critical),
@@ -65,10 +65,10 @@ function byNormal(
   };
 }
 
-function byWelch(c: Level, t: Level, alpha: number): Compared {
-  const found = welch(c, t, alpha);
-  const plain = difference(c, t, alpha);
-  if (isAbsent(found)) return withoutInterval(estimateOf(c, t), "welch", found, alpha);
+function byWelch(c: Level, t: Level, critical: number): Compared {
+  const found = welch(c, t, 2 * normalUpperTail(critical));
+  const plain = difference(c, t, critical);
+  if (isAbsent(found)) return withoutInterval(estimateOf(c, t), "welch", found, critical);
   return {
     difference: asDifference(found, "welch"),
     relative: relative(c, t, found.critical),
@@ -80,10 +80,9 @@ function byWelch(c: Level, t: Level, alpha: number): Compared {
 }
 
 /** The score interval exists wherever both arms have a unit; its standard error is the plain one, where that does. */
-function byScore(c: Level, t: Level, control: Counts, variant: Counts, alpha: number): Compared {
-  const critical = normalCritical(alpha);
+function byScore(c: Level, t: Level, control: Counts, variant: Counts, critical: number): Compared {
   const found = fewEvents(control, variant, critical);
-  const plain = difference(c, t, alpha);
+  const plain = difference(c, t, critical);
   const spread = spreadOf(c, t);
   return {
     difference: {
@@ -104,11 +103,11 @@ function byScore(c: Level, t: Level, control: Counts, variant: Counts, alpha: nu
 }
 
 /** The estimate stands where there is one; nothing else does. */
-function withoutInterval(estimate: number | null, method: Method, why: Absent, alpha: number): Compared {
+function withoutInterval(estimate: number | null, method: Method, why: Absent, critical: number): Compared {
   return {
     difference: { estimate, standardError: null, low: null, high: null, z: null, p: null, method },
     relative: why,
-    critical: normalCritical(alpha),
+    critical,
     df: null,
     why,
     beside: [],

@@ -15,6 +15,7 @@ export { type Exaggeration, exaggeration } from "./exaggeration.ts";
 export { fisher } from "./fisher.ts";
 export { holm } from "./holm.ts";
 export { independence } from "./independence.ts";
+export { level } from "./level.ts";
 // Moments
 export { type Moments, moments } from "./moments.ts";
 export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
