@@ -179,10 +179,6 @@ export function atRank(x: Statement, rank: bigint, n: bigint): Statement {
     : sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
 }
 
-/** The value at a rank of one arm. */
-export const atRankOfArm = (x: Statement, variant: number, rank: bigint): Statement =>
-  sql`SELECT ${x} AS x FROM units WHERE variant = ${variant} AND ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
-
 /** Units per variant, those without a value, and those above a cap. Gives variant, units, none<p>, over<p>. */
 export function leftOut(values: readonly Statement[], caps: readonly (string | null)[], dialect: Dialect): Statement {
   const counts = values.flatMap((x, p) => {
