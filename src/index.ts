@@ -107,7 +107,7 @@ function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
 /** From counts, cells and arms to the report's files; no file is read or written but the templates. */
 function decisionReport(plan: Plan, planText: string, { reduction, arms }: Measured): Promise<ReportFiles> {
   const checks = soundnessChecks(plan, reduction);
-  const effects = allEffects(plan, arms);
+  const effects = allEffects(plan, arms, reduction);
   const conclusion = concluded(plan, effects, checks, reduction, arms);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
   return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, conclusion });

@@ -23,6 +23,8 @@ export function because(reason: Absent["absent"], one: string, many: string): st
       return `what it would be adjusted for is the same for every ${one} of a group`;
     case "no-expected-effect":
       return "the plan expects no effect larger than the one that is asked for";
+    case "not-for-quantiles":
+      return "it is not computed for quantiles";
     case "not-built":
       return "this version does not compute it";
     default:

@@ -1,14 +1,16 @@
 import type { Arm } from "../cells/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrast, normalCritical } from "../stats/index.ts";
-import { arm } from "./effects.ts";
+import { contrast } from "../stats/index.ts";
+import { criticalOf, variancesOf } from "./critical.ts";
+import { arm, controlOf } from "./effects.ts";
 import { levelsInWords } from "./levels.ts";
+import { NO_POWER } from "./power.ts";
 import { told } from "./told.ts";
 import type { Effect } from "./types.ts";
 
 /**
- * The contrast between the best two of several variants that passed, on one metric, pointwise: the rule took the larger
- * estimate, and this tells how sure the order of the two is.
+ * The contrast between the best two of several variants that passed, on one metric, at the critical value that decides: the
+ * rule took the larger estimate, and this tells how sure the order of the two is.
  */
 export function betweenSentence(
   plan: Plan,
@@ -19,11 +21,10 @@ export function betweenSentence(
 ): string {
   const m = plan.metrics.indexOf(metric);
   const index = (name: string) => plan.variants.findIndex((variant) => variant.name === name);
-  const found = contrast(
-    arm(arms, m, index(other)),
-    arm(arms, m, index(best)),
-    normalCritical(1 - plan.decision.confidence),
-  );
+  const all = plan.variants.map((_, v) => arm(arms, m, v));
+  const control = index(controlOf(plan).name);
+  const critical = criticalOf(plan, metric, variancesOf(arm(arms, m, control), all.toSpliced(control, 1)));
+  const found = contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), critical);
   const effect: Effect = {
     metric: metric.name,
     role: "secondary",
@@ -32,8 +33,10 @@ export function betweenSentence(
     control: other,
     contrast: found,
     pAdjusted: null,
+    pHolm: null,
     zone: "not-settled",
     eitherWay: false,
+    power: NO_POWER,
   };
   const texts = told(effect, plan);
   const levels = levelsInWords(effect, plan);

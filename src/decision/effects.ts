@@ -1,18 +1,26 @@
 import type { Arm } from "../cells/types.ts";
+import type { Reduction } from "../engine/types.ts";
 import type { Metric, Plan, Variant } from "../plan/types.ts";
 import { contrast } from "../stats/index.ts";
 import { criticalOf, pOfVariants, type Variances, variancesOf } from "./critical.ts";
+import { withFamilies } from "./families.ts";
+import { analysedUnits, NO_POWER, withPower } from "./power.ts";
 import type { Effect } from "./types.ts";
 import { placed } from "./zones.ts";
 
 /**
- * Every metric x every variant against the control, in plan order, with its zone.
+ * Every metric x every variant against the control, in plan order, with its zone, its adjusted p and its power.
  *
  * What decides (primaries, guardrails) has intervals that hold for all variants at once; secondary metrics have
  * pointwise ones.
  * @param arms per metric, per variant, both in plan order
  */
-export function effects(plan: Plan, arms: readonly (readonly Arm[])[]): Effect[] {
+export function effects(plan: Plan, arms: readonly (readonly Arm[])[], reduction: Reduction): Effect[] {
+  const units = analysedUnits(reduction);
+  return withFamilies(plan, contrasts(plan, arms)).map((effect) => withPower(effect, plan, units));
+}
+
+function contrasts(plan: Plan, arms: readonly (readonly Arm[])[]): Effect[] {
   const control = plan.variants.findIndex((variant) => variant.isControl);
   return plan.metrics.flatMap((metric, m) => {
     const all = plan.variants.map((_, v) => arm(arms, m, v));
@@ -41,7 +49,9 @@ function effect(
     control: controlOf(plan).name,
     contrast: found,
     pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),
+    pHolm: null,
     ...placed(metric, found),
+    power: NO_POWER,
   };
 }
 

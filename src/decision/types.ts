@@ -19,11 +19,27 @@ export interface Effect {
   readonly variant: string;
   readonly control: string;
   readonly contrast: Contrast;
-  /** min(1, variants p) for primaries and guardrails; null for secondary metrics. */
+  /**
+   * p adjusted for the family (METHODS 2): of primaries and guardrails for the variants, Dunnett's; where any primary is
+   * enough then over the primaries, Holm's; of secondary metrics over all their contrasts, Benjamini and Hochberg's.
+   */
   readonly pAdjusted: number | null;
+  /** Holm's p over the variants, shown beside; null for secondary metrics and for one variant. */
+  readonly pHolm: number | null;
   readonly zone: Zone;
   /** Only on a primary: the interval also excludes a worthwhile loss (METHODS 2, no worthwhile difference either way). */
   readonly eitherWay: boolean;
+  readonly power: Power;
+}
+
+/** METHODS 4; null where the data or the plan give nothing to compute it from. */
+export interface Power {
+  /** The smallest true effect that a test of this size finds with the plan's power, in the metric's unit. */
+  readonly detectable: number | null;
+  /** Units of all arms that the plan's worthwhile effect, or margin, needs; not rounded. */
+  readonly unitsForWorthwhile: number | null;
+  /** Of a primary: mean size of the estimates that exclude 0, over the worthwhile effect, were that the true one. */
+  readonly exaggeration: number | null;
 }
 
 export type DecisionWord = "adopt" | "keep-control" | "not-settled" | "undecidable";

@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import type { Arm } from "../../src/cells/types.ts";
-import { conclusion, effects } from "../../src/decision/index.ts";
+import { conclusion, effects as effectsOf } from "../../src/decision/index.ts";
+import type { Effect } from "../../src/decision/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
 
@@ -27,6 +28,8 @@ const PRIMARY = metricOf({ name: "Booked", role: "primary" });
 const SECONDARY = metricOf({ name: "Opened" });
 const GUARDRAIL = metricOf({ name: "Left", role: "guardrail", margin: { kind: "absolute", value: 0.01 } });
 
+const effects = (plan: Plan, arms: readonly (readonly Arm[])[]) => effectsOf(plan, arms, reductionOf(plan));
+
 function plan(names: readonly string[], metrics = [PRIMARY]): Plan {
   return planOf({ metrics, variants: variantsOf(Object.fromEntries(names.map((name) => [name, 1]))) });
 }
@@ -52,12 +55,55 @@ describe("the effects", () => {
     }
   });
 
-  it("are pointwise and unadjusted for a metric for information", () => {
-    const arms = [share(6000), share(6600), share(6600)];
-    for (const effect of effects(plan(["list", "calendar", "map"], [SECONDARY]), [arms])) {
-      expect(effect.contrast.difference.low).toBeCloseTo(7.887059559e-3, 11);
-      expect(effect.pAdjusted).toBeNull();
-    }
+  // R 4.2.2: p of 6600, 6100 and 6200 against 6000 as above, p.adjust(c(p6600, p6100, p6200, p6100), "BH")
+  it("are pointwise for metrics for information, with Benjamini and Hochberg's p over all their contrasts", () => {
+    const other = { ...SECONDARY, name: "Scrolled" };
+    const found = effects(plan(["list", "calendar", "map"], [SECONDARY, PRIMARY, other]), [
+      [share(6000), share(6600), share(6100)],
+      [share(6000), share(6600), share(6600)],
+      [share(6000), share(6200), share(6100)],
+    ]);
+    expect(found[0]?.contrast.difference.low).toBeCloseTo(7.887059559e-3, 11);
+    const adjusted = found.filter(({ role }) => role === "secondary").map(({ pAdjusted }) => pAdjusted ?? Number.NaN);
+    [4.3004758734e-8, 0.332225908276, 0.106609816445, 0.332225908276].forEach((p, i) => {
+      expect((adjusted[i] ?? Number.NaN) / p).toBeCloseTo(1, 10);
+    });
+    expect(found.filter(({ role }) => role === "secondary").every(({ pHolm }) => pHolm === null)).toBe(true);
+  });
+
+  // R 4.2.2 with mvtnorm 1.1-3. Dunnett's p of A, 6250 and 6100 against 6000: 0.0299525212352, 0.522907529219; of B, 6200
+  // and 6150: 0.0966762953815, 0.251366532731; p.adjust(, "holm") over A and B of each variant, and over the p of A.
+  it("have, where one primary is enough, Holm's p over the primaries on Dunnett's, and intervals at their part of alpha", () => {
+    const arms = [
+      [share(6000), share(6250), share(6100)],
+      [share(6000), share(6200), share(6150)],
+    ];
+    const primaries = [
+      { ...PRIMARY, name: "A" },
+      { ...PRIMARY, name: "B" },
+    ];
+    const all = plan(["list", "calendar", "map"], primaries);
+    const any: Plan = { ...all, decision: { ...all.decision, primaries: "any" } };
+    const ps = (found: readonly Effect[]) => found.map(({ pAdjusted }) => pAdjusted ?? Number.NaN);
+    const expected = [0.0599050424704, 0.522907529219, 0.0966762953815, 0.502733065463];
+    ps(effects(any, arms)).forEach((p, i) => {
+      expect(p).toBeCloseTo(expected[i] ?? Number.NaN, 10);
+    });
+    expect(ps(effects(all, arms))[0]).toBeCloseTo(0.0299525212352, 10);
+    expect(effects(any, arms)[0]?.pHolm).toBeCloseTo(0.0317889023779, 10);
+    // critical values of the arms of A by mvtnorm and uniroot, at .025 and .05
+    expect(effects(any, arms)[0]?.contrast.critical).toBeCloseTo(2.47804977229, 10);
+    expect(effects(all, arms)[0]?.contrast.critical).toBeCloseTo(2.2128197981, 10);
+  });
+
+  it("keep alpha whole for guardrails where one primary is enough", () => {
+    const all = plan(["list", "calendar"], [PRIMARY, { ...PRIMARY, name: "B" }, GUARDRAIL]);
+    const any: Plan = { ...all, decision: { ...all.decision, primaries: "any" } };
+    const arms = [share(6000), share(6600)];
+    const criticals = effects(any, [arms, arms, arms]).map(({ contrast }) => contrast.critical);
+    // qnorm(1 - .0125), qnorm(1 - .025): R 4.2.2
+    expect(criticals[0]).toBeCloseTo(2.24140272760495, 12);
+    expect(criticals[2]).toBeCloseTo(1.95996398454005, 12);
   });
 
   // R 4.2.2 with mvtnorm 1.1-3, 6100 against 6000: z = 0.969640118508, 1 - pmvnorm(rep(-z, 4), rep(z, 4), corr, Miwa(1024))
@@ -106,9 +152,10 @@ describe("several variants that pass", () => {
     const found = decide(["list", "map", "tiles", "calendar"], [6000, 6400, 6500, 6600]);
     expect(found.variant).toBe("calendar");
     expect(found.sentence).toBe('Adopt "calendar". "tiles" and "map" passed too; "calendar" did best on Booked.');
-    // R 4.2.2, as above: 6600 against 6500, Fieller at qnorm(.975): 0.01538461538 -0.01652473943 0.04833867767
+    // R 4.2.2, 6600 against 6500, Fieller at Dunnett's critical value for these arms, 2.351981128 by mvtnorm and uniroot:
+    // 0.01538461538 -0.02278809127 0.05506207257
     expect(found.reasons.at(-1)).toBe(
-      'Between the two, Booked: 13.2 of 100 visitors with "calendar" and 13.0 with "tiles", 1.5% more (95% interval: 1.7% fewer to 4.8% more). This comparison does not decide.',
+      'Between the two, Booked: 13.2 of 100 visitors with "calendar" and 13.0 with "tiles", 1.5% more (95% interval: 2.3% fewer to 5.5% more). This comparison does not decide.',
     );
     expect(found.reasons).toHaveLength(4);
   });

@@ -1,3 +1,4 @@
+import { NO_POWER } from "../../src/decision/power.ts";
 import type { Effect } from "../../src/decision/types.ts";
 import { placed } from "../../src/decision/zones.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
@@ -78,7 +79,9 @@ export function effectOf(metric: Metric, contrast: Contrast, variant = "calendar
     control: "list",
     contrast,
     pAdjusted: null,
+    pHolm: null,
     ...placed(metric, contrast),
+    power: NO_POWER,
   };
 }
 

@@ -1,4 +1,5 @@
 import { placed } from "../../src/decision/index.ts";
+import { NO_POWER, withPower } from "../../src/decision/power.ts";
 import type { Effect, Zone } from "../../src/decision/types.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import type { ReportInputs } from "../../src/report/types.ts";
@@ -9,6 +10,7 @@ import { booked, calendar, contacts, fare, farePlan, list, perSearch, planText }
 import { type HandFlow, reductionOf } from "./reductions.ts";
 
 const N = 50_150;
+const N_ALL = 100_301;
 const flow: HandFlow = {
   analysed: [50_120, 50_181],
   byFilter: [[101, 98]],
@@ -27,8 +29,10 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
     control: "list",
     contrast,
     pAdjusted: metric.role === "secondary" ? null : contrast.difference.p,
+    pHolm: null,
     zone,
     eitherWay: false,
+    power: NO_POWER,
   };
 }
 
@@ -42,6 +46,9 @@ function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly fl
     effects: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
+    ...(over.effects === undefined
+      ? {}
+      : { effects: over.effects.map((effect) => withPower(effect, over.plan, N_ALL)) }),
   };
 }
 
