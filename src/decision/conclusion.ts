@@ -5,6 +5,7 @@ import type { Plan } from "../plan/types.ts";
 import { askedSentence } from "./asked.ts";
 import { betweenSentence } from "./between.ts";
 import { metricOf } from "./measure.ts";
+import { deciding } from "./power.ts";
 import { type Verdict, verdictOn } from "./rule.ts";
 import { adoptSentence, alsoPassed, keepSentence, notSettledSentence, undecidableSentence } from "./sentences.ts";
 import type { Conclusion, Effect } from "./types.ts";
@@ -37,12 +38,12 @@ export function conclusion(
   );
   const [best, second] = passing;
   if (best !== undefined) {
-    const sentence = adoptSentence(best.variant);
+    const sentence = adoptSentence(plan, best);
     if (second === undefined) return { decision: "adopt", variant: best.variant, sentence, reasons };
     return {
       decision: "adopt",
       variant: best.variant,
-      sentence: `${sentence} ${passedToo(passing)}`,
+      sentence: `${sentence} ${passedToo(plan, passing)}`,
       reasons: [...reasons, between(plan, best, second, arms)],
     };
   }
@@ -66,29 +67,32 @@ function reason(effect: Effect, plan: Plan): string[] {
 
 /** By the estimate on the first primary, signs turned; the sort is stable, so a tie keeps the plan's order. */
 function bestFirst(plan: Plan, verdicts: readonly Verdict[]): Verdict[] {
-  return [...verdicts].sort((a, b) => gainOn(plan, b) - gainOn(plan, a));
+  return [...verdicts].sort((a, b) => {
+    const [of, other] = [gainOn(plan, a), gainOn(plan, b)];
+    return of === other ? 0 : other - of;
+  });
 }
 
+/** Last of all where it has no estimate, which only happens where another primary is enough. */
 function gainOn(plan: Plan, { primaries: [first] }: Verdict): number {
-  const estimate = first?.contrast.difference.estimate;
-  if (first === undefined || estimate === null || estimate === undefined) {
-    throw new Error("a variant passed without an estimate on the first primary");
-  }
+  if (first === undefined) throw new Error("a plan came here without a primary");
+  const { estimate } = deciding(first).difference;
+  if (estimate === null) return Number.NEGATIVE_INFINITY;
   return turned(metricOf(first, plan), { low: estimate, high: estimate }).low ?? estimate;
 }
 
-function passedToo([best, ...others]: readonly Verdict[]): string {
+function passedToo(plan: Plan, [best, ...others]: readonly Verdict[]): string {
   const [first] = best?.primaries ?? [];
   const [second] = others;
   if (best === undefined || first === undefined || second === undefined)
     throw new Error("nothing passed beside the best");
-  const estimateOf = (verdict: Verdict) => verdict.primaries[0]?.contrast.difference.estimate;
-  const tie = estimateOf(best) === estimateOf(second);
+  const gains = [gainOn(plan, best), gainOn(plan, second)] as const;
+  const compared = gains[0] === Number.NEGATIVE_INFINITY ? null : gains[0] === gains[1] ? "tie" : "differ";
   return alsoPassed(
     best.variant,
     others.map(({ variant }) => variant),
     first.metric,
-    tie,
+    compared,
   );
 }
 

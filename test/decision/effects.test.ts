@@ -173,4 +173,21 @@ describe("several variants that pass", () => {
       'Adopt "map". "calendar" passed too, and no less well on Booked; "map" stands first in the plan.',
     );
   });
+
+  it("without an estimate on the first primary, where another is enough, the first in the plan", () => {
+    const primaries = [
+      { ...PRIMARY, name: "A" },
+      { ...PRIMARY, name: "B" },
+    ];
+    const all = plan(["list", "map", "calendar"], primaries);
+    const any: Plan = { ...all, decision: { ...all.decision, primaries: "any" } };
+    const arms = [
+      [share(0, 0), share(0, 0), share(0, 0)],
+      [share(6000), share(6500), share(6600)],
+    ];
+    const found = conclusion(any, effects(any, arms), [], reductionOf(any), arms);
+    expect(found.variant).toBe("map");
+    expect(found.sentence).toContain('"calendar" passed too; "map" stands first in the plan.');
+    expect(found.reasons.at(-1)).toBe("Between the two, A cannot be compared.");
+  });
 });

@@ -22,7 +22,6 @@ export const LATER: readonly Later[] = [
     remedy: "Take mean, proportion or ratio-of-totals, or remove the metric.",
   },
   { of: "metric", path: ["adjust-for"], remedy: "Remove it." },
-  { of: "plan", path: ["decision", "primaries"], value: "any", remedy: "Write all, or remove the key." },
   { of: "plan", path: ["decision", "interval"], value: "skew-corrected", remedy: "Write normal, or remove the key." },
   { of: "plan", path: ["forecast"], remedy: "Remove it." },
 ];
