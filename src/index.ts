@@ -4,7 +4,7 @@ import { readFile } from "node:fs/promises";
 import path from "node:path";
 import { type Arm, arms } from "./cells/index.ts";
 import { checks as soundnessChecks } from "./checks/index.ts";
-import { effects as allEffects, conclusion as concluded } from "./decision/index.ts";
+import { effects as allEffects, conclusion as concluded, withOrderStatistics } from "./decision/index.ts";
 import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
@@ -91,8 +91,8 @@ interface Measured {
 }
 
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
-async function measured(plan: Plan, reduction: Reduction, _session: Session): Promise<Measured> {
-  const arms = armsByMetric(plan, reduction);
+async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+  const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
   return { reduction, arms };
 }
 

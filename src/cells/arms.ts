@@ -11,6 +11,9 @@ const SUMS = Object.fromEntries(
 );
 const ENDS = { smallest: op.min("smallest"), largest: op.max("largest") };
 
+/** Order statistics are no cells: they are asked of the units, rank by rank. */
+const NONE_ASKED: ReadonlyMap<number, bigint> = new Map();
+
 type PartRow = SumsRow & {
   readonly variant: number;
   readonly total: bigint;
@@ -50,8 +53,11 @@ export function arms(metric: Metric, cells: ArmCells, variants: number): Arm[] {
       const scores = scoreSums(cells.ratio.score, variants);
       return of.map((numerator, v) => ratioArm(numerator, at(per, v), at(scores, v)));
     }
-    case "quantile":
-      throw new Error("quantile is not built yet");
+    case "quantile": {
+      const q = metric.quantile;
+      if (q === null) throw new Error(`the quantile "${metric.name}" came without its share`);
+      return of.map((sums) => ({ kind: "quantile", sums, q, ordered: NONE_ASKED }));
+    }
     default:
       return unknown(metric.summary);
   }

@@ -26,4 +26,12 @@ export type Arm =
       readonly denominator: PowerSums;
       /** Of d = (a - R b) / mean(b); null when the arm has no unit or its denominators sum to 0. */
       readonly score: PowerSums | null;
+    }
+  | {
+      readonly kind: "quantile";
+      readonly sums: PowerSums;
+      /** Which, a plain decimal in (0, 1) as the plan's text has it. */
+      readonly q: string;
+      /** Values by rank, 1 the smallest, in 10^-9 of the metric's unit: those that the arm's contrasts ask for. */
+      readonly ordered: ReadonlyMap<number, bigint>;
     };

@@ -23,7 +23,7 @@ const arm = z.strictObject({
 const effect = z.strictObject({
   metric: z.string(),
   role: z.enum(["primary", "secondary", "guardrail"]),
-  summary: z.enum(["mean", "proportion", "ratio-of-totals"]),
+  summary: z.enum(["mean", "proportion", "quantile", "ratio-of-totals"]),
   variant: z.string(),
   control: z.string(),
   arms: z.strictObject({ control: arm, variant: arm }),

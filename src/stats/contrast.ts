@@ -6,6 +6,7 @@ import { fewEvents, hasFewEvents } from "./few-events.ts";
 import { level } from "./level.ts";
 import { newcombe } from "./newcombe.ts";
 import { normalUpperTail } from "./normal.ts";
+import { quantilesCompared } from "./quantile-arms.ts";
 import { relative } from "./relative.ts";
 import { type Counts, counts } from "./share.ts";
 import type { Absent, Contrast, Level, Method } from "./types.ts";
@@ -20,7 +21,7 @@ type Compared = Omit<Contrast, "control" | "variant">;
  * One metric, one variant against the control: difference, relative difference and p by one method, so that they agree
  * about 0, and the intervals that stand beside.
  *
- * Which method counts, first that applies: score (a proportion with under 10 successes or failures in an arm), Welch
+ * Which method counts, first that applies: order statistics (a quantile), score (a proportion with under 10 successes or failures in an arm), Welch
  * (means and ratios with under 200 units in an arm), normal.
  * @param critical above 0, on the normal's scale, of one contrast or of several at once: low and high are held at it, and
  *   Welch takes t(df) at the same tail; z and p are of this contrast alone
@@ -30,6 +31,10 @@ export function contrast(control: Arm, variant: Arm, critical: number): Contrast
 }
 
 function compared(control: Arm, variant: Arm, critical: number): Compared {
+  if (control.kind === "quantile" && variant.kind === "quantile") {
+    const { difference, relative, why } = quantilesCompared(control, variant, critical);
+    return { difference, relative, critical, df: null, why, beside: [] };
+  }
   const [c, t] = [level(control), level(variant)];
   const [ofControl, ofVariant] = [countsOf(control), countsOf(variant)];
   const isShare = ofControl !== null && ofVariant !== null;

@@ -32,6 +32,7 @@ export {
 } from "./power.ts";
 // Quantiles
 export { type QuantileContrast, quantileContrast } from "./quantile.ts";
+export { type QuantileArm, quantileSearch, quantilesCompared } from "./quantile-arms.ts";
 export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
 export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";

@@ -1,5 +1,6 @@
 import type { Arm } from "../cells/types.ts";
 import { meanLevel } from "./mean.ts";
+import { quantileLevel } from "./quantile-arms.ts";
 import { ratioOfTotals } from "./ratio-of-totals.ts";
 import { share } from "./share.ts";
 import type { Absent, Level } from "./types.ts";
@@ -13,6 +14,8 @@ export function level(arm: Arm): Level | Absent {
       return share(arm.sums);
     case "ratio":
       return ratioOfTotals(arm);
+    case "quantile":
+      return quantileLevel(arm);
     default:
       return unknown(arm);
   }

@@ -17,6 +17,8 @@ export interface Absent {
     | "same-covariate"
     /** A worthwhile effect is to be shown, and the plan expects none above it. */
     | "no-expected-effect"
+    /** What rests on a variance, asked of a quantile. */
+    | "not-for-quantiles"
     | "not-built";
 }
 

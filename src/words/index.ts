@@ -22,4 +22,5 @@ export {
 export { capital, list, plural, quoted } from "./nouns.ts";
 export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
 export { percent, planPercent, signedPercent } from "./percent.ts";
+export { percentile } from "./percentile.ts";
 export { type Rates, rates } from "./rate.ts";

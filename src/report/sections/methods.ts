@@ -74,13 +74,13 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
   const { many } = plan.unitCalled;
   const all: readonly (MethodsSection["methods"][number] & { readonly when: boolean })[] = [
     {
-      when: true,
+      when: [...used].some((method) => method !== "quantile"),
       name: "Difference",
       how: `Variant minus control, of means over ${many}; two-sided ${confidence} interval by the normal approximation, each group with its own variance.`,
       source: "Neyman 1923, Statistical Science 5 (1990) 465-472; Imbens and Rubin 2015, chapter\u00a06",
     },
     {
-      when: effects.some((effect) => !("absent" in effect.contrast.relative)),
+      when: effects.some(({ summary, contrast }) => summary !== "quantile" && !("absent" in contrast.relative)),
       name: "Relative difference",
       how: "Variant over control, minus 1, with the interval for a ratio of means that holds 0 exactly when the difference\u2019s does. Not shown where the control\u2019s level is not clearly above 0.",
       source: "Fieller 1954, Journal of the Royal Statistical Society B 16, 175-185",
@@ -97,6 +97,13 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
       name: "Ratio of totals",
       how: "Total over total in each group; its variance from the score of each unit, numerator minus ratio times denominator, over the mean denominator.",
       source: "Cochran 1977, chapter\u00a06; Deng, Knoblich and Lu 2018",
+    },
+    {
+      when: has("quantile"),
+      name: "Quantiles",
+      how: `A group\u2019s quantile is the smallest value that at least the stated share of its ${many} do not exceed. Its interval runs from one value of the ordered list to another, at the ranks nq \u2213 z\u221a(nq(1 \u2212 q)) rounded outwards; the two groups are joined by the root of the sum of squares, and the relative difference follows from the same limits. p is the level at which the interval touches 0. Nothing is supposed of the shape of the values; many equal ones make the interval wider than stated, not narrower.`,
+      source:
+        "Hyndman and Fan 1996, The American Statistician 50, 361-365, type 1; Conover 1999, Practical Nonparametric Statistics, 3.2; Zou and Donner 2008, Statistics in Medicine 27, 1693-1702; Donner and Zou 2012, Statistical Methods in Medical Research 21, 347-359",
     },
     {
       when: used.has("welch") || beside.has("welch"),

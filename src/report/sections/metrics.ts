@@ -2,7 +2,7 @@ import { because, type Effect, ruleInWords, ruleOf } from "../../decision/index.
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, plain, plural, pText } from "../../words/index.ts";
+import { capital, count, type Interval, percentile, plain, plural, pText } from "../../words/index.ts";
 import {
   bareText,
   effectText,
@@ -113,7 +113,11 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
 /** Why a figure does not exist, as a sentence. */
 function absentText({ contrast, control }: Effect, plan: Plan): string | null {
   const { one, many } = plan.unitCalled;
+  const { low, high } = contrast.difference;
   if (contrast.why !== null) return `There is no interval, since ${because(contrast.why.absent, one, many)}.`;
+  if (contrast.difference.method === "quantile" && (low === null || high === null)) {
+    return `One end of the interval is open, since ${because("few-for-rank", one, many)}.`;
+  }
   if (!("absent" in contrast.relative)) return null;
   return `The difference relative to "${control}" is not shown, since ${because(contrast.relative.absent, one, many)}.`;
 }
@@ -123,6 +127,9 @@ function armColumns(metric: Metric, plan: Plan): string[] {
   const many = capital(plan.unitCalled.many);
   if (metric.summary === "proportion") return [many, "With", "Share"];
   if (metric.summary === "ratio-of-totals") return [many, `Total${unit}`, "Ratio", "Standard deviation of the score"];
+  if (metric.quantile !== null) {
+    return [many, `${capital(percentile(metric.quantile))}${unit}`, `Smallest${unit}`, `Largest${unit}`];
+  }
   return [many, `Total${unit}`, `Mean${unit}`, `Standard deviation${unit}`, `Smallest${unit}`, `Largest${unit}`];
 }
 
@@ -147,11 +154,13 @@ function armRows(metric: Metric, plan: Plan, effects: readonly Effect[]): ArmTex
   }
   const means = column((arm) => arm.mean);
   const sds = column((arm) => arm.sd);
-  const ends = metric.summary === "mean" ? [column((arm) => arm.smallest), column((arm) => arm.largest)] : [];
-  return arms.map(({ name }, i) => ({
-    variant: name,
-    cells: [units, totals, means, sds, ...ends].map((texts) => texts[i] ?? NONE),
-  }));
+  const ends = [column((arm) => arm.smallest), column((arm) => arm.largest)];
+  const columns = {
+    mean: [units, totals, means, sds, ...ends],
+    "ratio-of-totals": [units, totals, means, sds],
+    quantile: [units, means, ...ends],
+  }[metric.summary];
+  return arms.map(({ name }, i) => ({ variant: name, cells: columns.map((texts) => texts[i] ?? NONE) }));
 }
 
 function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
