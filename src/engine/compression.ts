@@ -1,4 +1,5 @@
 import { createReadStream } from "node:fs";
+import { pipeline } from "node:stream";
 import { createGunzip } from "node:zlib";
 import { Decompress } from "fzstd";
 
@@ -14,10 +15,17 @@ export async function* textOf(file: string): AsyncGenerator<string> {
 }
 
 async function* contentOf(file: string): AsyncGenerator<Uint8Array> {
-  const raw = createReadStream(file, { highWaterMark: PIECE });
-  if (/\.gz$/i.test(file)) yield* raw.pipe(createGunzip()) as AsyncIterable<Uint8Array>;
-  else if (/\.zst$/i.test(file)) yield* zstandard(raw as AsyncIterable<Uint8Array>);
-  else yield* raw as AsyncIterable<Uint8Array>;
+  if (/\.gz$/i.test(file)) yield* gunzipped(file);
+  else if (/\.zst$/i.test(file)) yield* zstandard(bytesOf(file));
+  else yield* bytesOf(file);
+}
+
+const bytesOf = (file: string) => createReadStream(file, { highWaterMark: PIECE }) as AsyncIterable<Buffer>;
+
+/** A pipeline and no bare pipe: what goes wrong with the file is met where the pieces are taken. */
+function gunzipped(file: string): AsyncIterable<Buffer> {
+  const gunzip = createGunzip({ chunkSize: PIECE });
+  return pipeline(createReadStream(file, { highWaterMark: PIECE }), gunzip, () => undefined);
 }
 
 async function* zstandard(pieces: AsyncIterable<Uint8Array>): AsyncGenerator<Uint8Array> {
@@ -27,6 +35,9 @@ async function* zstandard(pieces: AsyncIterable<Uint8Array>): AsyncGenerator<Uin
     stream.push(piece);
     yield* ready.splice(0);
   }
+  // It keeps frames of a few bytes back until it knows that nothing follows.
+  stream.push(new Uint8Array(0), true);
+  yield* ready;
 }
 
 /**
@@ -35,19 +46,18 @@ async function* zstandard(pieces: AsyncIterable<Uint8Array>): AsyncGenerator<Uin
  */
 export async function isWhole(file: string): Promise<boolean | null> {
   if (/\.gz$/i.test(file)) return isWholeGzip(file);
-  if (/\.zst$/i.test(file))
-    return isWholeZstandard(createReadStream(file, { highWaterMark: PIECE }) as AsyncIterable<Buffer>);
+  if (/\.zst$/i.test(file)) return isWholeZstandard(bytesOf(file));
   return null;
 }
 
 async function isWholeGzip(file: string): Promise<boolean> {
   try {
-    for await (const _piece of createReadStream(file, { highWaterMark: PIECE }).pipe(
-      createGunzip({ chunkSize: PIECE }),
-    ));
+    for await (const _piece of gunzipped(file));
     return true;
-  } catch {
-    return false;
+  } catch (error) {
+    // Z_BUF_ERROR, Z_DATA_ERROR: what is packed is at fault, and not the reading of the file.
+    if (String((error as NodeJS.ErrnoException).code).startsWith("Z_")) return false;
+    throw error;
   }
 }
 

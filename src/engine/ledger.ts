@@ -29,13 +29,13 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
   const [analysed = {}] = await engine.query(analysedRows());
   const rowsOf = (fate: number) =>
     sumOf(
-      fates.filter((row) => Number(row["fate"]) === fate),
+      fates.filter((row) => Number(row.fate) === fate),
       "rows",
     );
   const ids = unitLineIds(plan);
   const rowsOfLine = (id: string) =>
     sumOf(
-      lines.filter((row) => Number(row["line"]) === ids.indexOf(id)),
+      lines.filter((row) => Number(row.line) === ids.indexOf(id)),
       "rows",
     );
 
@@ -57,7 +57,7 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
     rowLines,
     unitsSeen: sumOf(lines, "units"),
     unitLines: ids.map((id, line) => {
-      const own = lines.filter((row) => Number(row["line"]) === line);
+      const own = lines.filter((row) => Number(row.line) === line);
       const isNamed = id !== "not-enrolled" && id !== "unknown-variant";
       return { id, units: sumOf(own, "units"), byVariant: isNamed ? byVariant(plan, own, "units") : null };
     }),
@@ -96,7 +96,7 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
     value: text(row, "value"),
     rows: count(row, "rows"),
   }));
-  const rowsNaming = (variant: number) => named.find((row) => Number(row["variant"]) === variant);
+  const rowsNaming = (variant: number) => named.find((row) => Number(row.variant) === variant);
   const variants = [
     ...plan.variants.flatMap((variant, i) => {
       const row = rowsNaming(i);
@@ -137,7 +137,7 @@ export async function rowsPerFile(files: number, engine: Engine): Promise<number
   const rows = await engine.query(rowsByFile());
   return Array.from({ length: files }, (_, file) =>
     sumOf(
-      rows.filter((row) => Number(row["file"]) === file),
+      rows.filter((row) => Number(row.file) === file),
       "rows",
     ),
   );
@@ -147,7 +147,7 @@ export async function rowsPerFile(files: number, engine: Engine): Promise<number
 function byVariant(plan: Plan, rows: readonly Row[], column: string): ByVariant {
   return plan.variants.map((_, v) =>
     sumOf(
-      rows.filter((row) => row["variant"] !== null && Number(row["variant"]) === v),
+      rows.filter((row) => row.variant !== null && Number(row.variant) === v),
       column,
     ),
   );

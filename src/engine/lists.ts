@@ -28,7 +28,7 @@ export async function readLists(plan: Plan, layout: Layout, folder: string, engi
     }
     await engine.run(listTable(filter.list, file, delimiter, header.length, column));
     const [row] = await engine.query(sql`SELECT count(*) AS ids FROM ${name(`list_${filter.list}`)}`);
-    read.push({ name: filter.listedIn, ...(await fingerprint(file)), rows: Number(row?.["ids"] ?? 0n) });
+    read.push({ name: filter.listedIn, ...(await fingerprint(file)), rows: Number(row?.ids ?? 0n) });
   }
   return read;
 }

@@ -25,7 +25,8 @@ export function logEnd(bins: readonly TimeBin[]): bigint | null {
   });
   const counting = sources.filter((source) => source.counted);
   const ends = (counting.length > 0 ? counting : sources).map((source) => source.end);
-  return ends.length === 0 ? null : ends.reduce((a, b) => (b < a ? b : a));
+  const [earliest = null] = [...ends].sort((a, b) => (a < b ? -1 : a > b ? 1 : 0));
+  return earliest;
 }
 
 function spanEnd(bins: readonly TimeBin[]): bigint {

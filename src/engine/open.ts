@@ -112,7 +112,7 @@ async function parquetHeader(path: string, engine: Engine): Promise<Header> {
   const described = await engine.query(parquetColumns(path));
   const named = await engine.query(parquetNames(path));
   return {
-    columns: topLevel(named.map((row) => ({ name: text(row, "name"), children: Number(row["num_children"] ?? 0n) }))),
+    columns: topLevel(named.map((row) => ({ name: text(row, "name"), children: Number(row.num_children ?? 0n) }))),
     engineNames: described.map((row) => text(row, "column_name")),
     kinds: described.map((row) => kindOf(text(row, "column_type"))),
     skip: 0,

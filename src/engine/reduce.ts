@@ -175,7 +175,7 @@ async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> 
       rows: count(row, "rows"),
       firstUs: whole(row, "first_us"),
       lastUs: whole(row, "last_us"),
-      counted: row["counted"] === true,
+      counted: row.counted === true,
     })),
   );
 }

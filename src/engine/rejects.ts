@@ -106,7 +106,7 @@ async function placedRows(file: LogFile, group: FileGroup, reasons: ReadonlyMap<
 
 async function withoutLines(file: number, engine: Engine): Promise<Rejected[]> {
   const rows = await engine.query(rejectedTexts(file));
-  return rows.map((row) => ({ line: null, reason: count(row, "reason"), text: String(row["text"] ?? "") }));
+  return rows.map((row) => ({ line: null, reason: count(row, "reason"), text: String(row.text ?? "") }));
 }
 
 /** Writes rows as RFC 4180 has them, no faster than the disk takes them. */

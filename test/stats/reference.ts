@@ -97,3 +97,21 @@ export const power = () =>
       factor: string;
     }[];
   }>("power.json");
+
+/** R 4.2.2: quantiles of two arms on R's own data, intervals and p from their definitions. */
+export const quantiles = () =>
+  read<
+    {
+      name: string;
+      q: string;
+      alpha: number;
+      control: number[];
+      variant: number[];
+      ofControl: string;
+      ofVariant: string;
+      low: string | null;
+      high: string | null;
+      p: string;
+      relative: { estimate: string; low: string | null; high: string | null } | null;
+    }[]
+  >("quantile.json");
