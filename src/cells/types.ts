@@ -1,3 +1,5 @@
+import type { Fraction } from "./fraction.ts";
+
 /**
  * Exact power sums of one group of units: n and S_k, k = 1..4, the sum of u^k with u = (x - pivot) / scale.
  * Groups with the same pivot and scale are merged by adding.
@@ -17,6 +19,27 @@ export interface PowerSums {
   readonly largest: number | null;
 }
 
+/**
+ * Exact joint sums of two values (y, x) of one group's units, over those that have both: S_jk is the sum of u^j w^k with
+ * u = (y - pivot) / scale of y, w likewise of x. Groups with the same pivots and scales are merged by adding.
+ */
+export interface JointSums {
+  readonly n: number;
+  /** Of y and of x: exact decimal text, up to 9 places. */
+  readonly pivots: readonly [string, string];
+  /** Powers of two. */
+  readonly scales: readonly [number, number];
+  /** In units of 2^-120. */
+  readonly s10: bigint;
+  readonly s01: bigint;
+  readonly s20: bigint;
+  readonly s11: bigint;
+  readonly s02: bigint;
+  /** Exact sums of y and of x, in 10^-9. */
+  readonly totalY: bigint;
+  readonly totalX: bigint;
+}
+
 /** One arm of one metric, ready for stats. */
 export type Arm =
   | { readonly kind: "mean" | "proportion"; readonly sums: PowerSums }
@@ -34,4 +57,15 @@ export type Arm =
       readonly q: string;
       /** Values by rank, 1 the smallest, in 10^-9 of the metric's unit: those that the arm's contrasts ask for. */
       readonly ordered: ReadonlyMap<number, bigint>;
+    }
+  | {
+      /** Of an adjusted contrast: the units' values are y - theta (x - X) (METHODS 1). */
+      readonly kind: "adjusted";
+      readonly summary: "mean" | "proportion";
+      /** Their mean, exact for that theta. */
+      readonly mean: Fraction;
+      /** Their sums; no exact total, for they are computed in doubles. */
+      readonly sums: PowerSums;
+      /** How far a value can be off by that, in the metric's unit. */
+      readonly noise: number;
     };

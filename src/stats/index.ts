@@ -8,6 +8,7 @@ export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
 export { contrast } from "./contrast.ts";
+export { type Adjustment, adjustedArm, adjustment, type CovariateArm } from "./covariate.ts";
 export { dunnettCritical, dunnettP } from "./dunnett.ts";
 // Power and sizes
 export { type Exaggeration, exaggeration } from "./exaggeration.ts";
