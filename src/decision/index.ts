@@ -8,10 +8,14 @@ export { conclusion } from "./conclusion.ts";
 export { controlOf, effects } from "./effects.ts";
 // which interval of an effect a reader sees, and what the plan asks in words
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
-export { nextSentences, untilThen, whatWouldSettle, whyNotSettled } from "./next.ts";
+export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
+// how large a next test is to be
+export { enrolledADay, type NextTest, nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
+export { analysedUnits, deciding, questionOf } from "./power.ts";
+export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
 // types
-export type { Conclusion, DecisionWord, Effect, Zone } from "./types.ts";
+export type { Conclusion, DecisionWord, Effect, Power, Zone } from "./types.ts";
 export { absoluteSentence, effectSentence, guardrailSentence } from "./words.ts";
 export { placed, ruleOf } from "./zones.ts";

@@ -4,25 +4,7 @@ import { conclusion, effects as effectsOf } from "../../src/decision/index.ts";
 import type { Effect } from "../../src/decision/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
-
-const N = 50_000;
-
-/** The arm of a yes-or-no metric: every power of 0 and 1 is itself, so each sum is the number of successes. */
-function share(successes: number, n = N): Arm {
-  const sum = BigInt(successes) << 120n;
-  return {
-    kind: "proportion",
-    sums: {
-      n,
-      pivot: "0",
-      scale: 1,
-      powers: [sum, sum, sum, sum],
-      total: BigInt(successes) * 10n ** 9n,
-      smallest: n === 0 ? null : 0,
-      largest: n === 0 ? null : successes > 0 ? 1 : 0,
-    },
-  };
-}
+import { share } from "./make-arms.ts";
 
 const PRIMARY = metricOf({ name: "Booked", role: "primary" });
 const SECONDARY = metricOf({ name: "Opened" });

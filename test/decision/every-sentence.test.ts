@@ -15,6 +15,7 @@ import type { Absent, Contrast } from "../../src/stats/types.ts";
 import { arbitraryLog } from "../checks/arbitrary.ts";
 import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
 import { contrastOf, type Ends, effectOf, unmeasurable, withoutRelative } from "./make.ts";
+import { share } from "./make-arms.ts";
 import { BROKEN, NEVER_USED } from "./words-never-used.ts";
 
 const ABSENT: readonly Absent["absent"][] = [
@@ -174,7 +175,8 @@ describe("an undecidable report", () => {
         const effects = plan.metrics.flatMap((metric) =>
           plan.variants.slice(1).map(({ name }) => effectOf(metric, contrastOf(0.12, ends), name)),
         );
-        const { decision, sentence, reasons } = conclusion(plan, effects, found, reduction, []);
+        const arms = plan.metrics.map(() => plan.variants.map(() => share(6000))); // of use where several pass
+        const { decision, sentence, reasons } = conclusion(plan, effects, found, reduction, arms);
         fc.pre(decision === "undecidable");
         for (const text of [sentence, ...reasons]) expect(text).not.toMatch(/interval|% (more|fewer)|of 100 /);
       }),
