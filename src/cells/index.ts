@@ -8,4 +8,4 @@ export { adjustedSums, jointSums } from "./joint.ts";
 export { NANO, nanoOf } from "./sums.ts";
 
 // Types
-export type { Arm, JointSums, PowerSums } from "./types.ts";
+export type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";

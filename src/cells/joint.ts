@@ -28,8 +28,8 @@ type JointRow = { readonly variant: number } & {
 export function jointSums(cells: JointTable, variants: number): JointSums[] {
   const { pivots, scales, ...columns } = cells;
   const rows = table(columns).groupby("variant").rollup(SUMS).objects() as JointRow[];
-  const none = { n: 0, s10: 0n, s01: 0n, s20: 0n, s11: 0n, s02: 0n, totalY: 0n, totalX: 0n };
-  return byVariant(rows, variants, { pivots, scales, ...none }, (row) => ({
+  const none = { n: 0, s10: 0n, s01: 0n, s20: 0n, s11: 0n, s02: 0n, totals: [0n, 0n] as const };
+  return byVariant<JointRow, JointSums>(rows, variants, { pivots, scales, ...none }, (row) => ({
     n: row.n,
     pivots,
     scales,
@@ -38,8 +38,7 @@ export function jointSums(cells: JointTable, variants: number): JointSums[] {
     s20: joined(row.high20, row.low20),
     s11: joined(row.high11, row.low11),
     s02: joined(row.high02, row.low02),
-    totalY: row.totalY,
-    totalX: row.totalX,
+    totals: [row.totalY, row.totalX],
   }));
 }
 

@@ -19,27 +19,6 @@ export interface PowerSums {
   readonly largest: number | null;
 }
 
-/**
- * Exact joint sums of two values (y, x) of one group's units, over those that have both: S_jk is the sum of u^j w^k with
- * u = (y - pivot) / scale of y, w likewise of x. Groups with the same pivots and scales are merged by adding.
- */
-export interface JointSums {
-  readonly n: number;
-  /** Of y and of x: exact decimal text, up to 9 places. */
-  readonly pivots: readonly [string, string];
-  /** Powers of two. */
-  readonly scales: readonly [number, number];
-  /** In units of 2^-120. */
-  readonly s10: bigint;
-  readonly s01: bigint;
-  readonly s20: bigint;
-  readonly s11: bigint;
-  readonly s02: bigint;
-  /** Exact sums of y and of x, in 10^-9. */
-  readonly totalY: bigint;
-  readonly totalX: bigint;
-}
-
 /** One arm of one metric, ready for stats. */
 export type Arm =
   | { readonly kind: "mean" | "proportion"; readonly sums: PowerSums }
@@ -69,3 +48,31 @@ export type Arm =
       /** How far a value can be off by that, in the metric's unit. */
       readonly noise: number;
     };
+
+/**
+ * Exact joint sums of two values (y, x) over the units of an arm that have both: S_jk is the sum of u^j w^k, u = (y - pivot)
+ * / scale with y's pivot and scale, w likewise with x's. Groups with the same pivots and scales are merged by adding.
+ */
+export interface JointSums {
+  readonly n: number;
+  readonly pivots: readonly [y: string, x: string];
+  readonly scales: readonly [y: number, x: number];
+  /** In units of 2^-120. */
+  readonly s10: bigint;
+  readonly s01: bigint;
+  readonly s20: bigint;
+  readonly s11: bigint;
+  readonly s02: bigint;
+  /** Exact sums of y and of x over these units, in 10^-9 of the unit of each. */
+  readonly totals: readonly [y: bigint, x: bigint];
+}
+
+/** One arm of a mean or proportion that is adjusted for a covariate. */
+export interface CovariateArm {
+  /** y over all units with a value. */
+  readonly value: PowerSums;
+  /** x over those of them that have one; its n is how many. Both arms have one pivot and scale. */
+  readonly covariate: PowerSums;
+  /** y and x together over the same units, by the pivots and scales of the two above. */
+  readonly joint: JointSums;
+}

@@ -1,5 +1,5 @@
 import type { Arm } from "../cells/types.ts";
-import { adjustedLevel } from "./covariate.ts";
+import { adjustedLevel } from "./adjusted-arm.ts";
 import { meanLevel } from "./mean.ts";
 import { quantileLevel } from "./quantile-arms.ts";
 import { ratioOfTotals } from "./ratio-of-totals.ts";

@@ -116,6 +116,27 @@ export const quantiles = () =>
     }[]
   >("quantile.json");
 
+/** R 4.2.2, MASS 7.3-58.2: adjusted contrasts of R's own data. */
+export const covariates = () =>
+  read<
+    {
+      name: string;
+      control: { y: number[]; x: (number | null)[] };
+      variant: { y: number[]; x: (number | null)[] };
+      theta: string;
+      centre: string;
+      levelControl: string;
+      levelVariant: string;
+      standardError: string;
+      t: string;
+      df: string;
+      varianceReduction: string;
+      regression: { slope: string; difference: string };
+      interacted: string;
+      balance: { difference: string; t: string; p: string; standardised: string };
+    }[]
+  >("covariate.json");
+
 interface AdjustedShape {
   readonly mean: string;
   readonly sd: string;
@@ -124,7 +145,7 @@ interface AdjustedShape {
 }
 
 /** R 4.2.2: adjusted contrasts on R's own data by cov, var and t.test, slopes of lm where those are the same. */
-export const covariates = () =>
+export const adjustedContrasts = () =>
   read<
     {
       name: string;
@@ -148,4 +169,4 @@ export const covariates = () =>
       control: AdjustedShape;
       treated: AdjustedShape;
     }[]
-  >("covariate.json");
+  >("adjusted-contrast.json");
