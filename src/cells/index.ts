@@ -4,7 +4,7 @@ export { arms, partSums } from "./arms.ts";
 // Exact quotients
 export { exactly, type Fraction, fraction, nearestNumber } from "./fraction.ts";
 // Adjusted contrasts
-export { adjustedSums, jointSums } from "./joint.ts";
+export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
 export { NANO, nanoOf } from "./sums.ts";
 
 // Types

@@ -1,8 +1,8 @@
 import { op, table } from "arquero";
-import type { JointTable, ScoreTable } from "../engine/types.ts";
-import { byVariant, scoreSums } from "./arms.ts";
+import type { CellTable, JointTable, ScoreTable } from "../engine/types.ts";
+import { byVariant, partSums, scoreSums } from "./arms.ts";
 import { joined } from "./sums.ts";
-import type { JointSums, PowerSums } from "./types.ts";
+import type { CovariateArm, JointSums, PowerSums } from "./types.ts";
 
 const COLUMNS = [
   "n",
@@ -40,6 +40,24 @@ export function jointSums(cells: JointTable, variants: number): JointSums[] {
     s02: joined(row.high02, row.low02),
     totals: [row.totalY, row.totalX],
   }));
+}
+
+/**
+ * The arms of a metric with its covariate, one of each variant in plan order.
+ * @param of y over all units with a value, x over those of them that have one
+ */
+export function covariateArms(
+  of: CellTable,
+  covariate: { readonly x: CellTable; readonly joint: JointTable },
+  variants: number,
+): CovariateArm[] {
+  const xs = partSums(covariate.x, variants);
+  const joints = jointSums(covariate.joint, variants);
+  return partSums(of, variants).map((value, v) => {
+    const [x, joint] = [xs[v], joints[v]];
+    if (x === undefined || joint === undefined) throw new Error(`no covariate of variant ${v} among ${variants}`);
+    return { value, covariate: x, joint };
+  });
 }
 
 /**
