@@ -1,6 +1,6 @@
 import type { Plan } from "../plan/types.ts";
 import { benjaminiHochberg, holm } from "../stats/index.ts";
-import { deciding } from "./power.ts";
+import { deciding } from "./deciding.ts";
 import type { Effect } from "./types.ts";
 
 /**

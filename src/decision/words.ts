@@ -1,6 +1,7 @@
 import type { Plan } from "../plan/types.ts";
 import { count, estimateInWords, type Interval, intervalInWords, MORE, quoted, type Scale } from "../words/index.ts";
 import { because } from "./absent.ts";
+import { deciding } from "./deciding.ts";
 import { levelsInWords } from "./levels.ts";
 import { absolute, amountText, counts, measure, metricOf, ruleInWords } from "./measure.ts";
 import { intervalLabel, told, unmeasured } from "./told.ts";
@@ -15,7 +16,7 @@ export function effectSentence(effect: Effect, plan: Plan): string {
   if (texts !== null && levels !== null) {
     return `${effect.metric}: ${levels}, ${texts.found}.${withoutRelative(effect, plan)}`;
   }
-  const reason = because(effect.contrast.why?.absent ?? "not-built", one, many);
+  const reason = because(deciding(effect).why?.absent ?? "not-built", one, many);
   return levels === null
     ? `${effect.metric}: nothing can be compared, since ${reason}.`
     : `${effect.metric}: ${levels}. No interval can be given, since ${reason}.`;
@@ -23,7 +24,7 @@ export function effectSentence(effect: Effect, plan: Plan): string {
 
 /** Said where a share of the control's level was wanted and does not exist. */
 function withoutRelative(effect: Effect, plan: Plan): string {
-  const { relative } = effect.contrast;
+  const { relative } = deciding(effect);
   if (ruleOf(metricOf(effect, plan))?.kind === "absolute" || !("absent" in relative)) return "";
   return ` No percentage is given, since ${because(relative.absent, plan.unitCalled.one, plan.unitCalled.many)}.`;
 }
