@@ -1,5 +1,5 @@
 import type { Reduction } from "../engine/types.ts";
-import type { Plan } from "../plan/types.ts";
+import type { Plan, Role } from "../plan/types.ts";
 import { atLeast, casesText, list, planPercent, spanText } from "../words/index.ts";
 import { amountText, metricOf, ruleInWords } from "./measure.ts";
 import { nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
@@ -37,20 +37,29 @@ export function paceInWords({ days }: Size): string {
   return days === null ? "" : `, ${spanText(days)} of enrolment at this pace`;
 }
 
+const MOST_QUESTIONS = 3; // more of them, each with its chance, nobody reads
+
 /** What a test of that size finds, and how often: each question, and all together where there are several. */
 export function foundSentence(plan: Plan, { sized, together }: Size): string {
-  const each = sized.map((one) => `${questionInWords(plan, one)} in ${casesText(one.power)} cases`);
+  const several = sized.length > MOST_QUESTIONS;
+  const told = (role: Role) =>
+    sized
+      .filter(({ effect }) => effect.role === role)
+      .map((one) => questionInWords(plan, one) + (several ? "" : ` in ${casesText(one.power)} cases`));
+  const [gains, limits] = [told("primary"), told("guardrail")];
+  const kept = limits.length === 0 ? "" : `, where nothing changes, ${list(limits)}`;
+  const each = gains.length === 0 ? kept : `${several ? ":" : ""} ${list(gains)}${kept === "" ? "" : ` and${kept}`}`;
+  const start = several ? `It finds each of these in ${casesText(plan.decision.power)} cases or more` : "It finds";
   const all = sized.length === 1 || together < 0.01 ? "" : `; all of it together in at least ${casesText(together)}`;
-  return `It finds ${list(each)}${all}.`;
+  return `${start}${each}${all}.`;
 }
 
-/** "a gain of 5% in Booked", "Support contacts within its limit of 5% more, if nothing changes there,". */
+/** "a gain of 5% in Booked", "Support contacts within its limit of 5% more". */
 function questionInWords(plan: Plan, { effect }: Sized): string {
   const metric = metricOf(effect, plan);
   const rule = ruleOf(metric);
   if (rule === null) throw new Error(`a size for ${metric.name}, of which the plan asks no amount`);
-  if (metric.role === "guardrail")
-    return `${metric.name} within its limit of ${ruleInWords(metric, rule)}, if nothing changes there,`;
+  if (metric.role === "guardrail") return `${metric.name} within its limit of ${ruleInWords(metric, rule)}`;
   const gain = metric.goodIs === "higher" ? "a gain" : "a fall";
   if (plan.decision.adoptWhen === "shown-better" || metric.expected === null)
     return `${gain} of ${amountText(metric, rule)} in ${metric.name}`;

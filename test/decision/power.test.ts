@@ -117,7 +117,29 @@ describe("the size that a next test needs", () => {
       "What would settle it: a new test with 46,600 visitors in each variant, 5 weeks of enrolment at this pace. It finds a gain of 5% in Booked in 4 of 5 cases.",
     );
     expect(settle(found(planOf({ metrics: [BOOKED, LEFT] }), [BOOKED_ARMS, LEFT_ARMS]))).toBe(
-      "What would settle it: a new test with 72,700 visitors in each variant. It finds a gain of 5% in Booked in 93 of 100 cases and Left within its limit of 0.4 percentage points higher, if nothing changes there, in 4 of 5 cases; all of it together in at least 73 of 100.",
+      "What would settle it: a new test with 72,700 visitors in each variant. It finds a gain of 5% in Booked in 93 of 100 cases and, where nothing changes, Left within its limit of 0.4 percentage points higher in 4 of 5 cases; all of it together in at least 73 of 100.",
+    );
+  });
+
+  it("is told without single chances where the questions are many", () => {
+    const metrics = ["A", "B", "C", "D"].map((name) => ({ ...BOOKED, name }));
+    expect(
+      settle(
+        found(
+          planOf({ metrics }),
+          metrics.map(() => BOOKED_ARMS),
+        ),
+      ),
+    ).toContain(
+      // 1 - 4 x 0.2
+      "It finds each of these in 4 of 5 cases or more: a gain of 5% in A, a gain of 5% in B, a gain of 5% in C and a gain of 5% in D; all of it together in at least 1 of 5.",
+    );
+  });
+
+  it("is told for a guardrail alone, where the primary has no amount", () => {
+    const plan = planOf({ metrics: [{ ...BOOKED, worthwhile: null }, LEFT] });
+    expect(settle(found(plan, [BOOKED_ARMS, LEFT_ARMS]))).toContain(
+      "It finds, where nothing changes, Left within its limit of 0.4 percentage points higher in 4 of 5 cases.",
     );
   });
 

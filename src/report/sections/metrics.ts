@@ -1,4 +1,4 @@
-import { because, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
+import { anyIsEnough, because, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
@@ -28,7 +28,8 @@ export interface MetricSection {
   readonly armColumns: readonly string[];
   readonly arms: readonly ArmText[];
   readonly effects: readonly EffectRow[];
-  readonly adjusted: boolean;
+  /** For what p is adjusted, as the head of its column; null where it is not. */
+  readonly adjustedFor: string | null;
 }
 export interface ArmText {
   readonly variant: string;
@@ -40,6 +41,8 @@ export interface EffectRow {
   readonly relative: Signed;
   readonly p: string;
   readonly pAdjusted: string;
+  /** "Holm 0.0012"; "" where nothing stands beside. */
+  readonly pBeside: string;
   readonly method: string;
   readonly verdict: string;
   readonly beside: readonly string[];
@@ -66,9 +69,21 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       armColumns: armColumns(metric, plan),
       arms: armRows(metric, plan, own),
       effects: own.map((effect) => effectRow(effect, metric, plan)),
-      adjusted: metric.role !== "secondary" && own.length > 1,
+      adjustedFor: adjustedFor(metric, plan),
     };
   });
+}
+
+/** The family that a metric's p are adjusted for, where it holds more than one test. */
+function adjustedFor(metric: Metric, plan: Plan): string | null {
+  const variants = plan.variants.length - 1;
+  if (metric.role === "secondary") {
+    const tests = variants * plan.metrics.filter(({ role }) => role === "secondary").length;
+    return tests > 1 ? `${tests} tests for information` : null;
+  }
+  const overPrimaries = metric.role === "primary" && anyIsEnough(plan);
+  if (variants > 1) return overPrimaries ? "the variants and deciding measures" : `${variants} variants`;
+  return overPrimaries ? "the deciding measures" : null;
 }
 
 function ruleText(metric: Metric): string {
@@ -172,6 +187,7 @@ function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
     relative: "absent" in relative ? { estimate: "not shown", interval: "" } : (text.relative ?? text.bare),
     p: pCell(difference.p),
     pAdjusted: pCell(effect.pAdjusted),
+    pBeside: effect.pHolm === null ? "" : `Holm ${pCell(effect.pHolm)}`,
     method: METHOD[difference.method],
     verdict: verdictText(effect, plan),
     beside: besideTexts(effect, metric),
