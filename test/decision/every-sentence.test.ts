@@ -82,13 +82,15 @@ function metrics(): Metric[] {
 }
 
 function plansFor(metric: Metric): Plan[] {
-  const others = metric.role === "primary" ? [] : [metricOf({ name: "Other", role: "primary" })];
-  return (["shown-better", "shown-worthwhile"] as const).map((adoptWhen) =>
-    planOf({
-      metrics: [metric, ...others],
-      decision: { confidence: 0.95, power: 0.8, adoptWhen, primaries: "all", interval: "normal" },
-    }),
-  );
+  const other = metricOf({ name: "Other", role: "primary" });
+  const others = metric.role === "primary" ? [] : [other];
+  const rule = planOf().decision;
+  return [
+    planOf({ metrics: [metric, ...others], decision: { ...rule, adoptWhen: "shown-better" } }),
+    planOf({ metrics: [metric, ...others], decision: { ...rule, adoptWhen: "shown-worthwhile" } }),
+    // "Other" is better throughout, and here it is enough
+    planOf({ metrics: [metric, other], decision: { ...rule, primaries: "any" } }),
+  ];
 }
 
 function sentences(effect: Effect, plan: Plan): string[] {
