@@ -1,5 +1,5 @@
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrast, isAbsent } from "../stats/index.ts";
+import { balance, contrast, isAbsent } from "../stats/index.ts";
 import type { Contrast } from "../stats/types.ts";
 import type { Pair, PairArms } from "./covariates.ts";
 import { criticalOf, pOfVariants, type Variances } from "./critical.ts";
@@ -29,7 +29,7 @@ export function withAdjusted(
 
 function adjustedEffect(plan: Plan, metric: Metric, effect: Effect, pair: PairArms, variances: Variances): Effect {
   const { by, control, variant } = pair;
-  const own = contrast(control, variant, criticalOf(plan, metric, variances));
+  const own = contrast(control.arm, variant.arm, criticalOf(plan, metric, variances));
   const { p } = own.difference;
   return {
     ...effect,
@@ -39,6 +39,7 @@ function adjustedEffect(plan: Plan, metric: Metric, effect: Effect, pair: PairAr
       centre: by.centre,
       varianceReduction: by.varianceReduction,
       withoutCovariate: by.withoutCovariate,
+      balance: balance(control.covariate, variant.covariate, 1 - plan.decision.confidence),
       pAdjustedOfPlain: effect.pAdjusted,
     },
     pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),

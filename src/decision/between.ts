@@ -27,7 +27,7 @@ export function betweenSentence(
   const isAdjusted = pair !== null && !isAbsent(pair);
   const critical = criticalOf(plan, metric, decidingVariances(plan, m, arms, isAdjusted ? pairs : []));
   const found = isAdjusted
-    ? contrast(pair.control, pair.variant, critical)
+    ? contrast(pair.control.arm, pair.variant.arm, critical)
     : contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), critical);
   const effect: Effect = {
     metric: metric.name,

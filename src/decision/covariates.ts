@@ -1,4 +1,4 @@
-import { adjustedSums, type CovariateArm, covariateArms } from "../cells/index.ts";
+import { adjustedSums, type CovariateArm, covariateArms, type PowerSums } from "../cells/index.ts";
 import type { AdjustedRequest, MetricCells, Reduction, ScoreTable } from "../engine/index.ts";
 import type { Plan } from "../plan/types.ts";
 import { type Adjusted, type AdjustedArm, adjusted, adjustedArms, isAbsent, meanFromPivot } from "../stats/index.ts";
@@ -16,8 +16,12 @@ export interface Pair {
 }
 export interface PairArms {
   readonly by: Adjusted;
-  readonly control: AdjustedArm;
-  readonly variant: AdjustedArm;
+  readonly control: PairArm;
+  readonly variant: PairArm;
+}
+export interface PairArm {
+  readonly arm: AdjustedArm;
+  readonly covariate: PowerSums;
 }
 
 /**
@@ -27,59 +31,50 @@ export interface PairArms {
  */
 export async function adjustedPairs(plan: Plan, { metrics }: Reduction, cells: AdjustedCells): Promise<Pair[]> {
   const slopes = plan.metrics.flatMap((_, m) => slopesOf(plan, m, metrics[m]));
-  const requests = slopes.flatMap(({ request }) => (request === null ? [] : [request]));
+  const requests = slopes.flatMap((slope) => ("request" in slope ? [slope.request] : []));
   const tables = requests.length === 0 ? [] : await cells(requests);
-  return slopes.map(({ metric, control, variant, arms, by, request }) => {
-    if (isAbsent(by) || request === null) return { metric, control, variant, found: by as Absent };
-    const table = tables[requests.indexOf(request)];
-    if (table === undefined)
-      throw new Error(`${tables.length} tables of adjusted values for ${requests.length} requests`);
-    const sums = adjustedSums(table, request.pivots[0], plan.variants.length);
-    const [c, t] = [sums[control], sums[variant]];
-    if (c === undefined || t === undefined) throw new Error(`no adjusted values of variants ${control} and ${variant}`);
-    const summary = plan.metrics[metric]?.summary === "proportion" ? "proportion" : "mean";
-    return {
-      metric,
-      control,
-      variant,
-      found: { by, ...adjustedArms(summary, arms, by.theta, { control: c, variant: t }) },
-    };
+  return slopes.map((slope) => {
+    const { metric, control, variant } = slope;
+    if ("absent" in slope) return { metric, control, variant, found: { absent: slope.absent } };
+    const table = tables[requests.indexOf(slope.request)];
+    if (table === undefined) throw new Error(`${tables.length} tables of values for ${requests.length} requests`);
+    return { metric, control, variant, found: pairArms(plan, slope, table) };
   });
 }
 
-/** The pair in this order: with the arms exchanged only the two places change. */
+/** The pair in this order: with the arms exchanged only the two places change. Null where the plan does not adjust. */
 export function pairOf(pairs: readonly Pair[], metric: number, control: number, variant: number): Pair["found"] | null {
   const own = pairs.filter((pair) => pair.metric === metric);
   const straight = own.find((pair) => pair.control === control && pair.variant === variant);
   if (straight !== undefined) return straight.found;
-  const turned = own.find((pair) => pair.control === variant && pair.variant === control)?.found;
-  if (turned === undefined) return null;
-  return isAbsent(turned) ? turned : { ...turned, control: turned.variant, variant: turned.control };
+  const turned = own.find((pair) => pair.control === variant && pair.variant === control)?.found ?? null;
+  if (turned === null || isAbsent(turned)) return turned;
+  return { by: turned.by, control: turned.variant, variant: turned.control };
 }
 
-interface Slope {
-  readonly metric: number;
-  readonly control: number;
-  readonly variant: number;
+/** A pair before its values are asked for. */
+type Slope = Omit<Pair, "found"> & (Absent | Asked);
+interface Asked {
+  readonly by: Adjusted;
   readonly arms: { readonly control: CovariateArm; readonly variant: CovariateArm };
-  readonly by: Adjusted | Absent;
-  readonly request: AdjustedRequest | null;
+  readonly request: AdjustedRequest;
 }
 
 function slopesOf(plan: Plan, metric: number, cells: MetricCells | undefined): Slope[] {
   if (cells?.covariate == null) return [];
-  const arms = covariateArms(cells.of, cells.covariate, plan.variants.length);
+  const all = covariateArms(cells.of, cells.covariate, plan.variants.length);
   return contrastsOf(plan, metric).map(([control, variant]) => {
-    const [c, t] = [arms[control], arms[variant]];
-    if (c === undefined || t === undefined) throw new Error(`no arms ${control} and ${variant} among ${arms.length}`);
-    const by = adjusted(c, t);
-    const request = isAbsent(by)
-      ? null
-      : { metric, control, variant, theta: by.theta, pivots: c.joint.pivots, meanFromPivot: meanFromPivot(c, t) };
-    return { metric, control, variant, arms: { control: c, variant: t }, by, request };
+    const arms = { control: at(all, control), variant: at(all, variant) };
+    const by = adjusted(arms.control, arms.variant);
+    const of = { metric, control, variant };
+    if (isAbsent(by)) return { ...of, ...by };
+    const { pivots } = arms.control.joint;
+    const meanLess = meanFromPivot(arms.control, arms.variant);
+    return { ...of, by, arms, request: { ...of, theta: by.theta, pivots, meanFromPivot: meanLess } };
   });
 }
 
+/** Every variant with the control; on the first primary also the variants with each other. */
 function contrastsOf({ variants, metrics }: Plan, metric: number): (readonly [control: number, variant: number])[] {
   const control = variants.findIndex(({ isControl }) => isControl);
   const others = variants.flatMap(({ isControl }, v) => (isControl ? [] : [v]));
@@ -88,4 +83,25 @@ function contrastsOf({ variants, metrics }: Plan, metric: number): (readonly [co
     ...others.map((variant) => [control, variant] as const),
     ...(isFirst ? others.flatMap((a) => others.filter((b) => b > a).map((b) => [a, b] as const)) : []),
   ];
+}
+
+function pairArms(
+  plan: Plan,
+  { metric, control, variant, by, arms, request }: Slope & Asked,
+  table: ScoreTable,
+): PairArms {
+  const summary = plan.metrics[metric]?.summary === "proportion" ? "proportion" : "mean";
+  const sums = adjustedSums(table, request.pivots[0], plan.variants.length);
+  const own = adjustedArms(summary, arms, by.theta, { control: at(sums, control), variant: at(sums, variant) });
+  return {
+    by,
+    control: { arm: own.control, covariate: arms.control.covariate },
+    variant: { arm: own.variant, covariate: arms.variant.covariate },
+  };
+}
+
+function at<T>(all: readonly T[], variant: number): T {
+  const found = all[variant];
+  if (found === undefined) throw new Error(`no arm ${variant} among ${all.length}`);
+  return found;
 }

@@ -68,7 +68,9 @@ export function decidingVariances(
   const others = plan.variants.flatMap((_, v) =>
     v === c ? [] : [{ variant: arm(arms, m, v), pair: pairOf(pairs, m, c, v) }],
   );
-  const compared = others.map(({ variant, pair }) => (pair === null || isAbsent(pair) ? { control, variant } : pair));
+  const compared = others.map(({ variant, pair }) =>
+    pair === null || isAbsent(pair) ? { control, variant } : { control: pair.control.arm, variant: pair.variant.arm },
+  );
   return compared.every((pair) => pair.control === control)
     ? variancesOf(
         control,

@@ -2,6 +2,8 @@
 
 // why a figure does not exist, to follow "since"
 export { because } from "./absent.ts";
+// what is adjusted for
+export { adjustedSentence, covariateInWords } from "./adjusted-words.ts";
 // what was found, in sentences that page, terminal and summary share
 export { askedSentence } from "./asked.ts";
 export { conclusion } from "./conclusion.ts";

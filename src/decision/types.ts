@@ -1,4 +1,5 @@
 import type { Role, Summary } from "../plan/types.ts";
+import type { Balance } from "../stats/index.ts";
 import type { Absent, Contrast } from "../stats/types.ts";
 
 export type Zone =
@@ -29,7 +30,7 @@ export interface Effect {
    * enough then over the primaries, Holm's; of secondary metrics over all their contrasts, Benjamini and Hochberg's.
    */
   readonly pAdjusted: number | null;
-  /** Holm's p over the variants, shown beside; null for secondary metrics and for one variant. */
+  /** Holm's p over the same family, shown beside; null for secondary metrics and for one variant. */
   readonly pHolm: number | null;
   readonly zone: Zone;
   /** Only on a primary: the interval also excludes a worthwhile loss (METHODS 2, no worthwhile difference either way). */
@@ -47,6 +48,8 @@ export interface AdjustedContrast {
   readonly varianceReduction: number;
   /** Units whose x is missing, of those with a value. */
   readonly withoutCovariate: { readonly control: number; readonly variant: number };
+  /** How x itself differs between the arms, where only chance should tell them apart; pointwise. */
+  readonly balance: Balance;
   /** p of the unadjusted contrast, adjusted for its family as if the plan had no covariate. */
   readonly pAdjustedOfPlain: number | null;
 }

@@ -66,8 +66,11 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
 
 /** Only what this report uses. */
 function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["methods"] {
-  const used = new Set(effects.map((effect) => effect.contrast.difference.method));
-  const beside = new Set(effects.flatMap((effect) => effect.contrast.beside.map(({ method }) => method)));
+  const shown = effects.flatMap(({ contrast, adjusted }) =>
+    adjusted === null ? [contrast] : [contrast, adjusted.contrast],
+  );
+  const used = new Set(shown.map(({ difference }) => difference.method));
+  const beside = new Set(shown.flatMap((contrast) => contrast.beside.map(({ method }) => method)));
   const has = (summary: Effect["summary"]) => effects.some((effect) => effect.summary === summary);
   const others = plan.variants.filter((variant) => !variant.isControl).length;
   const confidence = planPercent(plan.decision.confidence);
@@ -109,6 +112,13 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
       how: `A group\u2019s quantile is the smallest value that at least the stated share of its ${many} do not exceed. Its interval runs from one value of the ordered list to another, at the ranks nq \u2213 z\u221a(nq(1 \u2212 q)) rounded outwards; the two groups are joined by the root of the sum of squares, and the relative difference follows from the same limits. p is the level at which the interval touches 0. Nothing is supposed of the shape of the values; many equal ones make the interval wider than stated, not narrower.`,
       source:
         "Hyndman and Fan 1996, The American Statistician 50, 361-365, type 1; Conover 1999, Practical Nonparametric Statistics, 3.2; Zou and Donner 2008, Statistics in Medicine 27, 1693-1702; Donner and Zou 2012, Statistical Methods in Medical Research 21, 347-359",
+    },
+    {
+      when: effects.some(({ adjusted }) => adjusted !== null),
+      name: "Adjusted differences",
+      how: `A ${plan.unitCalled.one}\u2019s value less a share of what was known of it before: the share that leaves the difference the smallest variance. Levels keep their height, since only distances from the mean of both groups are taken off. The unadjusted difference stands under it and does not decide.`,
+      source:
+        "Deng, Xu, Kohavi and Walker 2013; Yang and Tsiatis 2001, The American Statistician 55, 314-321; Lin 2013, Annals of Applied Statistics 7, 295-318",
     },
     {
       when: used.has("welch") || beside.has("welch"),

@@ -1,4 +1,4 @@
-import { anyIsEnough, because, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
+import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
@@ -14,6 +14,7 @@ import {
   verdictText,
 } from "../effect-text.ts";
 import { measureText } from "../plan-words.ts";
+import { adjustedNotes, unadjusted } from "./adjusted.ts";
 
 /** Section 5: one part a metric, with its arms and its effects. */
 export interface MetricSection {
@@ -68,7 +69,7 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       unit: metric.summary === "proportion" ? "percentage points" : (metric.unitOfMeasure ?? ""),
       armColumns: armColumns(metric, plan),
       arms: armRows(metric, plan, own),
-      effects: own.map((effect) => effectRow(effect, metric, plan)),
+      effects: own.flatMap((effect) => effectRows(effect, metric, plan)),
       adjustedFor: adjustedFor(metric, plan),
     };
   });
@@ -118,6 +119,7 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
       `${plural(cells.countedWithoutNumber, "counted row", "counted rows")} held no number and added nothing.`,
     );
   }
+  notes.push(...adjustedNotes(metric, plan, effects));
   for (const effect of effects) {
     const absent = absentText(effect, plan);
     if (absent !== null && !notes.includes(absent)) notes.push(absent);
@@ -126,7 +128,9 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
 }
 
 /** Why a figure does not exist, as a sentence. */
-function absentText({ contrast, control }: Effect, plan: Plan): string | null {
+function absentText(effect: Effect, plan: Plan): string | null {
+  const contrast = deciding(effect);
+  const { control } = effect;
   const { one, many } = plan.unitCalled;
   const { low, high } = contrast.difference;
   if (contrast.why !== null) return `There is no interval, since ${because(contrast.why.absent, one, many)}.`;
@@ -178,8 +182,19 @@ function armRows(metric: Metric, plan: Plan, effects: readonly Effect[]): ArmTex
   return arms.map(({ name }, i) => ({ variant: name, cells: columns.map((texts) => texts[i] ?? NONE) }));
 }
 
+/** One row an effect; where it is adjusted that one decides, and the unadjusted stands under it. */
+function effectRows(effect: Effect, metric: Metric, plan: Plan): EffectRow[] {
+  const own = effectRow(effect, metric, plan);
+  const plain = unadjusted(effect);
+  if (plain === null) return [own];
+  return [
+    { ...own, variant: `${own.variant}, adjusted` },
+    { ...effectRow(plain, metric, plan), variant: `${own.variant}, not adjusted`, verdict: "shown beside" },
+  ];
+}
+
 function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
-  const { difference, relative } = effect.contrast;
+  const { difference, relative } = deciding(effect);
   const text = effectText(effect, plan);
   return {
     variant: effect.variant,
@@ -199,7 +214,7 @@ function pCell(p: number | null): string {
 }
 
 function besideTexts(effect: Effect, metric: Metric): string[] {
-  const { beside, difference } = effect.contrast;
+  const { beside, difference } = deciding(effect);
   return beside.map(({ method, low, high }) => {
     const interval: Interval = { estimate: difference.estimate ?? (low + high) / 2, low, high };
     return `${METHOD[method]}, ${bareText(interval, metric, []).interval}`;
