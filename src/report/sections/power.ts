@@ -64,7 +64,7 @@ function powerTable(plan: Plan, reduction: Reduction, effects: readonly Effect[]
   const counted = analysedUnits(reduction);
   const columns = columnsOf(plan, counted);
   return {
-    caption: `What tests of these sizes find, from the spread of the values and not from the effects found; ${plan.unitCalled.many} are those of all variants together`,
+    caption: "What tests of a size find: from the spread of the values, never from the effects found",
     several: plan.variants.length > 2,
     columns: columns.map(({ head }) => head),
     rows: effects.map((effect) => ({
@@ -140,7 +140,11 @@ function reading(plan: Plan, effects: readonly Effect[]): string[] {
         "Overstated: if the true effect were just what was asked for, the tests of the size counted whose interval excludes no difference would report it, on average, so many times as large.",
       ]
     : [];
-  return [`How often, in 100 tests of a size: ${clears}${within}.`, ...overstated];
+  const { many } = plan.unitCalled;
+  return [
+    `How often, in 100 tests of a size: ${clears}${within}. Numbers of ${many} are of all variants together.`,
+    ...overstated,
+  ];
 }
 
 function nextTexts(plan: Plan, effects: readonly Effect[], reduction: Reduction): string[] {
