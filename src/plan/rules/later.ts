@@ -21,7 +21,6 @@ export const LATER: readonly Later[] = [
     value: "quantile",
     remedy: "Take mean, proportion or ratio-of-totals, or remove the metric.",
   },
-  { of: "metric", path: ["adjust-for"], remedy: "Remove it." },
   { of: "plan", path: ["decision", "interval"], value: "skew-corrected", remedy: "Write normal, or remove the key." },
   { of: "plan", path: ["forecast"], remedy: "Remove it." },
 ];
