@@ -25,7 +25,9 @@ export interface ChoiceRow {
   readonly relative: Relative | Absent | null;
   /** Null where a choice says only whether there is a difference, and on which side. */
   readonly zone: Zone | null;
-  /** 1 above the control, -1 below, 0 not told apart. */
+  /** Of the estimate: 1 where the variant is higher, -1 where it is lower; null without an estimate. */
+  readonly sign: -1 | 0 | 1 | null;
+  /** On which side of 0 the interval lies: 1 above, -1 below, 0 neither. */
   readonly side: -1 | 0 | 1;
   /** Whether it puts the contrast where the plan's own choice does: in the same zone, or on the same side of 0. */
   readonly agrees: boolean;
@@ -40,6 +42,7 @@ export function planRow(effect: Effect): ChoiceRow {
     difference: bare(difference),
     relative,
     zone: effect.zone,
+    sign: signOf(difference.estimate),
     side: sideOf(difference),
     agrees: true,
   };
@@ -52,19 +55,22 @@ export function row(choice: ChoiceName, compared: Compared, effect: Effect, metr
     difference: bare(compared.difference),
     relative: compared.relative,
     zone,
+    sign: signOf(compared.difference.estimate),
     side: sideOf(compared.difference),
     agrees: zone === effect.zone,
   };
 }
 
 /** A choice that gives a p and no interval in the metric's unit. */
-export function onlyP(choice: ChoiceName, sign: number, p: number, alpha: number, effect: Effect): ChoiceRow {
-  const side = p < alpha ? (sign > 0 ? 1 : sign < 0 ? -1 : 0) : 0;
+export function onlyP(choice: ChoiceName, estimate: number, p: number, alpha: number, effect: Effect): ChoiceRow {
+  const sign = signOf(estimate);
+  const side = p < alpha ? (sign ?? 0) : 0;
   return {
     choice,
     difference: { estimate: null, low: null, high: null, p },
     relative: null,
     zone: null,
+    sign,
     side,
     agrees: side === sideOf(deciding(effect).difference),
   };
@@ -72,6 +78,10 @@ export function onlyP(choice: ChoiceName, sign: number, p: number, alpha: number
 
 function bare({ estimate, low, high, p }: Contrast["difference"]): ChoiceRow["difference"] {
   return { estimate, low, high, p };
+}
+
+function signOf(estimate: number | null): ChoiceRow["sign"] {
+  return estimate === null ? null : estimate > 0 ? 1 : estimate < 0 ? -1 : 0;
 }
 
 function sideOf({ low, high }: Contrast["difference"]): -1 | 0 | 1 {

@@ -124,7 +124,7 @@ function logged(plan: Plan, metric: Metric, cells: MetricCells, own: readonly Ef
   const contrasts = contrastsAsPlanned(plan, metric, all);
   return own.map((effect, i) => {
     const { estimate, p } = contrasts[i]?.difference ?? { estimate: null, p: null };
-    return estimate === null || p === null ? [] : [onlyP("log", Math.sign(estimate), p, alpha, effect)];
+    return estimate === null || p === null ? [] : [onlyP("log", estimate, p, alpha, effect)];
   });
 }
 

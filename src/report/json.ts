@@ -122,11 +122,12 @@ function sensitivityJson({ metric, variant, rows }: Choices): SensitivityJson {
   return {
     metric,
     variant,
-    rows: rows.map(({ choice, difference: { estimate, low, high, p }, agrees }) => ({
+    rows: rows.map(({ choice, difference: { estimate, low, high, p }, sign, agrees }) => ({
       choice,
       estimate,
       low,
       high,
+      sign,
       p,
       agrees,
     })),

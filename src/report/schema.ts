@@ -124,6 +124,7 @@ export const reportSchema = z.strictObject({
             estimate: numberOrNull,
             low: numberOrNull,
             high: numberOrNull,
+            sign: z.union([z.literal(-1), z.literal(0), z.literal(1)]).nullable(),
             p: numberOrNull,
             agrees: z.boolean(),
           }),

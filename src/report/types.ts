@@ -83,6 +83,7 @@ export interface SensitivityJson {
     readonly estimate: number | null;
     readonly low: number | null;
     readonly high: number | null;
+    readonly sign: -1 | 0 | 1 | null;
     readonly p: number | null;
     readonly agrees: boolean;
   }[];
