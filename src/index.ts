@@ -8,6 +8,7 @@ import {
   adjustedPairs,
   effects as allEffects,
   conclusion as concluded,
+  contrastFigures,
   otherChoices,
   type Pair,
   withOrderStatistics,
@@ -116,8 +117,8 @@ function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
 
 /** From counts, cells and arms to the report's files; no file is read or written but the templates. */
 function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
-  const checks = soundnessChecks(plan, reduction);
   const effects = allEffects(plan, arms, reduction, pairs);
+  const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
   const planSha256 = createHash("sha256").update(planText).digest("hex");

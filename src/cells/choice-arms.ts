@@ -1,10 +1,10 @@
 import { alike, pairTerms } from "../engine/groups.ts";
 import type { CellTable, JointTable, MetricCells, OtherCells, ScoreTable, UnitEnds } from "../engine/types.ts";
 import type { Metric } from "../plan/types.ts";
-import { partSums, scoreSums } from "./arms.ts";
 import { fraction, nearestNumber } from "./fraction.ts";
 import { jointSums } from "./joint.ts";
 import { pivotsOf, ratioOfPairs, secondOf } from "./pair-ratio.ts";
+import { partSums, scoreSums } from "./roll-up.ts";
 import { NANO, nanoOf } from "./sums.ts";
 import type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";
 

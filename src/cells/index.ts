@@ -1,6 +1,7 @@
 // Roll-ups
-export { arms, partSums } from "./arms.ts";
-
+export { arms } from "./arms.ts";
+// By bucket, for resampling
+export { bucketNumbers, bucketPairs, bucketSums, withoutX } from "./buckets.ts";
 // Other choices
 export { armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "./choice-arms.ts";
 // Exact quotients
@@ -11,4 +12,4 @@ export { sumsOfSquares } from "./pair-ratio.ts";
 export { NANO, nanoOf } from "./sums.ts";
 
 // Types
-export type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";
+export type { Arm, BucketSums, CovariateArm, JointSums, PairSums, PowerSums } from "./types.ts";

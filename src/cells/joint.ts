@@ -1,6 +1,6 @@
 import { op, table } from "arquero";
 import type { CellTable, JointTable, ScoreTable } from "../engine/types.ts";
-import { byVariant, partSums, scoreSums } from "./arms.ts";
+import { byVariant, partSums, scoreSums } from "./roll-up.ts";
 import { joined } from "./sums.ts";
 import type { CovariateArm, JointSums, PowerSums } from "./types.ts";
 

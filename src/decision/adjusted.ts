@@ -1,8 +1,8 @@
 import type { Metric, Plan } from "../plan/types.ts";
-import { balance, contrast, isAbsent } from "../stats/index.ts";
-import type { Contrast } from "../stats/types.ts";
-import type { Pair, PairArms } from "./covariates.ts";
-import { criticalOf, pOfVariants, type Variances } from "./critical.ts";
+import { balance, isAbsent } from "../stats/index.ts";
+import type { Absent, Contrast } from "../stats/types.ts";
+import { type ComparedPair, comparedContrast } from "./compared.ts";
+import { pOfVariants, type Variances } from "./critical.ts";
 import type { Effect } from "./types.ts";
 import { placed } from "./zones.ts";
 
@@ -12,24 +12,34 @@ import { placed } from "./zones.ts";
  * @param effects one a variant, in plan order
  * @param found the adjusted arms of each; null where the plan does not adjust
  * @param variances of the levels that decide
+ * @param critical of their intervals
  */
 export function withAdjusted(
   plan: Plan,
   metric: Metric,
   effects: readonly Effect[],
-  found: readonly (Pair["found"] | null)[],
+  found: readonly (ComparedPair | Absent | null)[],
   variances: Variances,
+  critical: number,
 ): Effect[] {
   return effects.map((effect, i) => {
     const pair = found[i] ?? null;
     if (pair === null) return effect;
-    return isAbsent(pair) ? { ...effect, notAdjusted: pair } : adjustedEffect(plan, metric, effect, pair, variances);
+    if (isAbsent(pair)) return { ...effect, notAdjusted: pair };
+    return adjustedEffect(plan, metric, effect, pair, variances, critical);
   });
 }
 
-function adjustedEffect(plan: Plan, metric: Metric, effect: Effect, pair: PairArms, variances: Variances): Effect {
-  const { by, control, variant } = pair;
-  const own = contrast(control.arm, variant.arm, criticalOf(plan, metric, variances));
+function adjustedEffect(
+  plan: Plan,
+  metric: Metric,
+  effect: Effect,
+  pair: ComparedPair,
+  variances: Variances,
+  critical: number,
+): Effect {
+  const { by, control, variant } = pair.pair;
+  const own = comparedContrast(plan, pair, critical);
   const { p } = own.difference;
   return {
     ...effect,

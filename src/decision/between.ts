@@ -1,6 +1,9 @@
 import type { Arm } from "../cells/types.ts";
+import type { Reduction } from "../engine/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrast, isAbsent } from "../stats/index.ts";
+import { isAbsent } from "../stats/index.ts";
+import { bucketsOf } from "./buckets.ts";
+import { comparedContrast } from "./compared.ts";
 import { type Pair, pairOf } from "./covariates.ts";
 import { criticalOf } from "./critical.ts";
 import { arm, decidingVariances } from "./effects.ts";
@@ -16,6 +19,7 @@ import type { Effect } from "./types.ts";
 export function betweenSentence(
   plan: Plan,
   metric: Metric,
+  reduction: Reduction,
   arms: readonly (readonly Arm[])[],
   pairs: readonly Pair[],
   best: string,
@@ -26,9 +30,13 @@ export function betweenSentence(
   const pair = pairOf(pairs, m, index(other), index(best));
   const isAdjusted = pair !== null && !isAbsent(pair);
   const critical = criticalOf(plan, metric, decidingVariances(plan, m, arms, isAdjusted ? pairs : []));
-  const found = isAdjusted
-    ? contrast(pair.control.arm, pair.variant.arm, critical)
-    : contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), critical);
+  const cells = reduction.metrics[m];
+  const buckets = cells === undefined ? null : bucketsOf(metric, cells, plan.variants.length);
+  const [control, variant] = isAdjusted
+    ? [pair.control.arm, pair.variant.arm]
+    : [arm(arms, m, index(other)), arm(arms, m, index(best))];
+  const own = buckets?.(index(other), index(best), isAdjusted ? pair : null) ?? null;
+  const found = comparedContrast(plan, { control, variant, buckets: own }, critical);
   const effect: Effect = {
     metric: metric.name,
     role: "secondary",
@@ -43,6 +51,8 @@ export function betweenSentence(
     zone: "not-settled",
     eitherWay: false,
     power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
   const texts = told(effect, plan);
   const levels = levelsInWords(effect, plan);

@@ -18,6 +18,8 @@ export interface PairArms {
   readonly by: Adjusted;
   readonly control: PairArm;
   readonly variant: PairArm;
+  /** Their values by bucket. */
+  readonly cells: ScoreTable;
 }
 export interface PairArm {
   readonly arm: AdjustedArm;
@@ -49,7 +51,7 @@ export function pairOf(pairs: readonly Pair[], metric: number, control: number, 
   if (straight !== undefined) return straight.found;
   const turned = own.find((pair) => pair.control === variant && pair.variant === control)?.found ?? null;
   if (turned === null || isAbsent(turned)) return turned;
-  return { by: turned.by, control: turned.variant, variant: turned.control };
+  return { ...turned, control: turned.variant, variant: turned.control };
 }
 
 /** A pair before its values are asked for. */
@@ -97,6 +99,7 @@ function pairArms(
     by,
     control: { arm: own.control, covariate: arms.control.covariate },
     variant: { arm: own.variant, covariate: arms.variant.covariate },
+    cells: table,
   };
 }
 

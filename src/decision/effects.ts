@@ -1,11 +1,14 @@
 import type { Arm } from "../cells/types.ts";
-import type { Reduction } from "../engine/types.ts";
+import type { MetricCells, Reduction } from "../engine/types.ts";
 import type { Metric, Plan, Variant } from "../plan/types.ts";
-import { contrast, isAbsent } from "../stats/index.ts";
+import { isAbsent } from "../stats/index.ts";
 import { withAdjusted, withPlainP } from "./adjusted.ts";
+import { bucketsOf } from "./buckets.ts";
+import { type Compared, comparedContrast, comparedPair } from "./compared.ts";
 import { type Pair, pairOf } from "./covariates.ts";
 import { criticalOf, pOfVariants, type Variances, variancesOf, variancesOfPairs } from "./critical.ts";
 import { withFamilies } from "./families.ts";
+import { withNormality } from "./normality.ts";
 import { analysedUnits, NO_POWER, withPower } from "./power.ts";
 import type { Effect } from "./types.ts";
 import { placed } from "./zones.ts";
@@ -25,7 +28,7 @@ export function effects(
   pairs: readonly Pair[] = [],
 ): Effect[] {
   const units = analysedUnits(reduction);
-  const found = plan.metrics.map((metric, m) => contrasts(plan, metric, m, arms, pairs));
+  const found = plan.metrics.map((metric, m) => contrasts(plan, metric, m, arms, pairs, cellsOf(reduction, m), units));
   const plain = withFamilies(
     plan,
     found.flatMap((metric) => metric.plain),
@@ -44,16 +47,44 @@ function contrasts(
   m: number,
   arms: readonly (readonly Arm[])[],
   pairs: readonly Pair[],
+  cells: MetricCells,
+  units: number,
 ): { readonly plain: readonly Effect[]; readonly deciding: readonly Effect[] } {
   const c = indexOfControl(plan);
-  const others = plan.variants.flatMap((variant, v) => (v === c ? [] : [{ variant, v }]));
-  const variances = decidingVariances(plan, m, arms, []);
-  const plain = others.map(({ variant, v }) =>
-    effect(plan, metric, variant, arm(arms, m, c), arm(arms, m, v), variances),
+  const buckets = bucketsOf(metric, cells, plan.variants.length);
+  const others = plan.variants.flatMap((variant, v) =>
+    v === c
+      ? []
+      : [
+          {
+            variant,
+            compared: { control: arm(arms, m, c), variant: arm(arms, m, v), buckets: buckets?.(c, v, null) ?? null },
+            pair: comparedPair(pairOf(pairs, m, c, v), buckets, c, v),
+          },
+        ],
   );
-  if (metric.adjustFor === null) return { plain, deciding: plain };
-  const found = others.map(({ v }) => pairOf(pairs, m, c, v));
-  return { plain, deciding: withAdjusted(plan, metric, plain, found, decidingVariances(plan, m, arms, pairs)) };
+  const variances = decidingVariances(plan, m, arms, []);
+  const critical = criticalOf(plan, metric, variances);
+  const plain = others.map(({ variant, compared }) => effect(plan, metric, variant, compared, variances, critical));
+  const found = others.map(({ pair }) => pair);
+  const ofPairs = metric.adjustFor === null ? variances : decidingVariances(plan, m, arms, pairs);
+  const criticalOfPairs = metric.adjustFor === null ? critical : criticalOf(plan, metric, ofPairs);
+  const deciding = withAdjusted(plan, metric, plain, found, ofPairs, criticalOfPairs);
+  return {
+    plain,
+    deciding: deciding.map((effect, i) => {
+      const { compared, pair } = others[i] ?? {};
+      const own = effect.adjusted === null || pair == null || isAbsent(pair) ? compared : pair;
+      if (own === undefined) throw new Error(`${deciding.length} effects of ${others.length} variants`);
+      return withNormality(effect, plan, own, effect.adjusted === null ? critical : criticalOfPairs, units);
+    }),
+  };
+}
+
+function cellsOf({ metrics }: Reduction, m: number): MetricCells {
+  const cells = metrics[m];
+  if (cells === undefined) throw new Error(`no cells for metric ${m}, of ${metrics.length}`);
+  return cells;
 }
 
 /** The variances of the levels that the contrasts of metric m compare, adjusted where there are adjusted arms. */
@@ -83,11 +114,11 @@ function effect(
   plan: Plan,
   metric: Metric,
   variant: Variant,
-  control: Arm,
-  treated: Arm,
+  compared: Compared,
   variances: Variances,
+  critical: number,
 ): Effect {
-  const found = contrast(control, treated, criticalOf(plan, metric, variances));
+  const found = comparedContrast(plan, compared, critical);
   const { p } = found.difference;
   return {
     metric: metric.name,
@@ -102,6 +133,8 @@ function effect(
     notAdjusted: null,
     ...placed(metric, found),
     power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
 }
 

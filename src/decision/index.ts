@@ -19,6 +19,8 @@ export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, sig
 export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
 // how large a next test is to be
 export { enrolledADay, type NextTest, nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
+// how good the normal approximation is
+export { contrastFigures } from "./normality.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";
@@ -26,6 +28,6 @@ export { analysedUnits, questionOf } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
 // types
-export type { AdjustedContrast, Conclusion, DecisionWord, Effect, Power, Zone } from "./types.ts";
+export type { AdjustedContrast, Conclusion, ContrastNormality, DecisionWord, Effect, Power, Zone } from "./types.ts";
 export { absoluteSentence, effectSentence, guardrailSentence } from "./words.ts";
 export { placed, ruleOf } from "./zones.ts";

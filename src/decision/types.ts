@@ -1,5 +1,5 @@
 import type { Role, Summary } from "../plan/types.ts";
-import type { Balance } from "../stats/index.ts";
+import type { Balance, Normality, Resampled } from "../stats/index.ts";
 import type { Absent, Contrast } from "../stats/types.ts";
 
 export type Zone =
@@ -36,6 +36,21 @@ export interface Effect {
   /** Only on a primary: the interval also excludes a worthwhile loss (METHODS 2, no worthwhile difference either way). */
   readonly eitherWay: boolean;
   readonly power: Power;
+  /** Of the contrast that decides; null for a quantile, and where an arm's shape is not known. */
+  readonly normality: ContrastNormality | null;
+  /** Of the contrast that decides; null for a quantile, and where it has no interval. */
+  readonly resampled: Resampled | null;
+}
+
+/** Whether the normal approximation is good enough for one contrast (METHODS 3). */
+export interface ContrastNormality extends Normality {
+  /** The critical value that counts, on the normal's scale. */
+  readonly critical: number;
+  /**
+   * The same contrast by the interval that does not count: the skew-corrected one beside the normal or Welch's, and the
+   * other way round. Null beside a score interval.
+   */
+  readonly other: Contrast | null;
 }
 
 /** The contrast of y - theta (x - X), x the plan's covariate (METHODS 1). */

@@ -1,5 +1,5 @@
 import type { Check } from "../checks/types.ts";
-import type { Choices, Effect } from "../decision/index.ts";
+import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import type { Contrast } from "../stats/types.ts";
@@ -105,7 +105,7 @@ function effectJson(effect: Effect): EffectJson {
           },
     zone: effect.zone,
     power: { detectable: effect.power.detectable, unitsForWorthwhile: effect.power.unitsForWorthwhile },
-    normality: null,
+    normality: normalityJson(effect.normality),
   };
 }
 
@@ -116,6 +116,23 @@ function differenceJson({ difference }: Contrast, pAdjusted: number | null): Eff
 
 function relativeJson({ relative }: Contrast): EffectJson["relative"] {
   return "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high };
+}
+
+/** The worse of pooled and own shapes; the larger of the arms' shares; of the rules of thumb the stricter one. */
+function normalityJson(normality: ContrastNormality | null): EffectJson["normality"] {
+  if (normality === null) return null;
+  const { tails, corrected, unitsForTails, unitsByRule, largest } = normality;
+  const shares = [largest?.control, largest?.variant].flatMap((share) => (share == null ? [] : [share.ofSquares]));
+  return {
+    skew: tails.skew,
+    lowerTail: tails.reported.lowerTail,
+    upperTail: tails.reported.upperTail,
+    own: { lowerTail: tails.own.lowerTail, upperTail: tails.own.upperTail },
+    skewCorrected: { low: corrected.low, high: corrected.high },
+    unitsForTails,
+    unitsByRule: unitsByRule.kohavi,
+    largestShare: shares.length === 0 ? null : Math.max(...shares),
+  };
 }
 
 function sensitivityJson({ metric, variant, rows }: Choices): SensitivityJson {

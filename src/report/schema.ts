@@ -5,6 +5,7 @@ const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
 );
 const count = z.number().min(0);
+const tail = z.number().min(0).max(1);
 const byVariant = z.record(z.string(), count);
 const numberOrNull = z.number().nullable();
 const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
@@ -29,7 +30,7 @@ const difference = z
     z: numberOrNull,
     p: numberOrNull,
     pAdjusted: numberOrNull,
-    method: z.enum(["normal", "welch", "score", "quantile"]),
+    method: z.enum(["normal", "welch", "score", "skew-corrected", "quantile"]),
   })
   .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise.");
 
@@ -53,7 +54,26 @@ const effect = z.strictObject({
     .describe("Adjusted for the plan's covariate. Where not null its difference decides, and zone and power are its."),
   zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
   power: z.strictObject({ detectable: numberOrNull, unitsForWorthwhile: numberOrNull }),
-  normality: z.null(),
+  normality: z
+    .strictObject({
+      skew: z.number().describe("Skewness of the estimate."),
+      lowerTail: tail.describe("Chance that the normal interval lies wholly below the truth."),
+      upperTail: tail.describe("Chance that it lies wholly above the truth."),
+      own: z
+        .strictObject({ lowerTail: tail, upperTail: tail })
+        .describe("By each arm's own shape; above stands the worse of that and of one shape for both."),
+      skewCorrected: z.strictObject({ low: z.number(), high: z.number() }),
+      unitsForTails: count
+        .nullable()
+        .describe("Units of all arms from which on both tails are within a fifth of the nominal one; at least."),
+      unitsByRule: count.describe("Rule of thumb: 355 times the squared skewness, units of each arm."),
+      largestShare: z
+        .number()
+        .nullable()
+        .describe("The largest unit's share of an arm's sum of squares about the mean; null for proportions."),
+    })
+    .nullable()
+    .describe("How good the normal approximation is for the contrast that decides."),
 });
 
 const check = z

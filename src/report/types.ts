@@ -70,7 +70,17 @@ export interface EffectJson {
   } | null;
   readonly zone: Zone;
   readonly power: { readonly detectable: number | null; readonly unitsForWorthwhile: number | null };
-  readonly normality: null;
+  /** Null for a quantile, and where an arm has no shape. */
+  readonly normality: {
+    readonly skew: number;
+    readonly lowerTail: number;
+    readonly upperTail: number;
+    readonly own: { readonly lowerTail: number; readonly upperTail: number };
+    readonly skewCorrected: { readonly low: number; readonly high: number };
+    readonly unitsForTails: number | null;
+    readonly unitsByRule: number;
+    readonly largestShare: number | null;
+  } | null;
 }
 
 /** One contrast under other reasonable choices, the plan's own ("as-planned") first. */

@@ -2,8 +2,10 @@ import { type BucketCells, type DrawTable, gapOfX, tableOfArms } from "./bucket-
 import { drawRows, type Studentised, studentised, sumRows } from "./draws.ts";
 import { generator, type Seed } from "./generator.ts";
 import { type Histogram, histogram } from "./histogram.ts";
+import { normalCritical } from "./normal.ts";
 import { type NotDrawn, tooFew, tooManyUndefined } from "./resampling.ts";
 import type { Counts } from "./share.ts";
+import type { TailPair } from "./tails.ts";
 
 /** Shares of the units at which the distribution is drawn, so that its way to the normal curve is seen. */
 const SHARES = [1 / 16, 1 / 4, 1] as const;
@@ -17,7 +19,11 @@ export interface BootstrapT {
   /** Draws that have no T; left out. */
   readonly undefinedDraws: number;
   /** The drawn distribution of T at n/16, n/4 and n units; null where an arm has under 20 units or T is often undefined. */
-  readonly drawn: readonly { readonly share: number; readonly histogram: Histogram | null }[];
+  readonly drawn: readonly {
+    readonly share: number;
+    readonly histogram: Histogram | null;
+    readonly tails: TailPair | null;
+  }[];
 }
 
 /**
@@ -61,11 +67,18 @@ export function bootstrapT(
     high: estimate - standardError * (all[rank - 1] as number),
     draws,
     undefinedDraws,
-    drawn: found.map(({ share, values }) => ({
-      share,
-      histogram: values === null || tooManyUndefined(draws - values.length, draws) ? null : histogram(values),
-    })),
+    drawn: found.map(({ share, values }) =>
+      values === null || tooManyUndefined(draws - values.length, draws)
+        ? { share, histogram: null, tails: null }
+        : { share, histogram: histogram(values), tails: beyond(values, normalCritical(alpha)) },
+    ),
   };
+}
+
+/** Shares of the values below -z and above z. */
+function beyond(values: Float64Array, z: number): TailPair {
+  const share = (isBeyond: (value: number) => boolean) => values.filter(isBeyond).length / values.length;
+  return { lowerTail: share((value) => value < -z), upperTail: share((value) => value > z) };
 }
 
 /** T of each draw of `many` buckets, sorted; without the undefined ones. */

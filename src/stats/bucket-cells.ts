@@ -1,19 +1,6 @@
-/** Sums of one value by bucket: n and the first two power sums about any one pivot, in any one scale. Arrays of one length. */
-export interface BucketSums {
-  readonly n: Float64Array;
-  readonly s1: Float64Array;
-  readonly s2: Float64Array;
-}
+import type { BucketSums, PairSums } from "../cells/types.ts";
 
-/** Sums of two values (y, x) of the same units by bucket, each about a pivot and in a scale. Arrays of one length. */
-export interface PairSums {
-  readonly n: Float64Array;
-  readonly y: Float64Array;
-  readonly x: Float64Array;
-  readonly yy: Float64Array;
-  readonly yx: Float64Array;
-  readonly xx: Float64Array;
-}
+export type { BucketSums, PairSums };
 
 /** What resampling takes of one contrast: both arms' sums by the same buckets, with the same pivots and scales. */
 export type BucketCells =

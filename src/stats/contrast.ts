@@ -7,13 +7,20 @@ import { level } from "./level.ts";
 import { newcombe } from "./newcombe.ts";
 import { normalUpperTail } from "./normal.ts";
 import { quantilesCompared } from "./quantile-arms.ts";
-import { relative } from "./relative.ts";
+import { relative, relativeOf } from "./relative.ts";
+import { shapedArm } from "./shaped-arm.ts";
 import { type Counts, counts } from "./share.ts";
+import { skewCorrected, skewCorrectedRelative } from "./skew-corrected.ts";
 import type { Absent, Contrast, Level, Method } from "./types.ts";
 import { welch } from "./welch.ts";
 
 /** Means and ratios with fewer units than this in an arm are compared by Welch's t; the limit is ours. */
 const SMALL_ARM = 200;
+
+/** Asks for the skew-corrected interval: how far the arms look like one distribution, 1 to 0 (`armsAlike`). */
+export interface Alike {
+  readonly alike: number;
+}
 
 type Compared = Omit<Contrast, "control" | "variant">;
 
@@ -21,16 +28,22 @@ type Compared = Omit<Contrast, "control" | "variant">;
  * One metric, one variant against the control: difference, relative difference and p by one method, so that they agree
  * about 0, and the intervals that stand beside.
  *
- * Which method counts, first that applies: order statistics (a quantile), score (a proportion with under 10 successes or failures in an arm), Welch
- * (means, adjusted or not, and ratios with under 200 units in an arm), normal.
+ * Which method counts, first that applies: order statistics (a quantile), score (a proportion with under 10 successes or
+ * failures in an arm), skew-corrected (where it is asked for and the arms' shapes are known), Welch (means, adjusted or not,
+ * and ratios with under 200 units in an arm), normal.
  * @param critical above 0, on the normal's scale, of one contrast or of several at once: low and high are held at it, and
  *   Welch takes t(df) at the same tail; z and p are of this contrast alone
+ * @param corrected asks for the skew-corrected interval
  */
-export function contrast(control: Arm, variant: Arm, critical: number): Contrast {
-  return { control: armFigures(control), variant: armFigures(variant), ...compared(control, variant, critical) };
+export function contrast(control: Arm, variant: Arm, critical: number, corrected: Alike | null = null): Contrast {
+  return {
+    control: armFigures(control),
+    variant: armFigures(variant),
+    ...compared(control, variant, critical, corrected),
+  };
 }
 
-function compared(control: Arm, variant: Arm, critical: number): Compared {
+function compared(control: Arm, variant: Arm, critical: number, corrected: Alike | null): Compared {
   if (control.kind === "quantile" && variant.kind === "quantile") {
     const { difference, relative, why } = quantilesCompared(control, variant, critical);
     return { difference, relative, critical, df: null, why, beside: [] };
@@ -48,8 +61,10 @@ function compared(control: Arm, variant: Arm, critical: number): Compared {
     return withoutInterval(null, method, why, critical);
   }
   if (few) return byScore(c, t, ofControl, ofVariant, critical);
-  if (small) return byWelch(c, t, critical);
-  return byNormal(c, t, isShare ? { control: ofControl, variant: ofVariant } : null, critical);
+  const plain = small
+    ? byWelch(c, t, critical)
+    : byNormal(c, t, isShare ? { control: ofControl, variant: ofVariant } : null, critical);
+  return corrected === null ? plain : (byCorrection(control, variant, c, t, plain, critical, corrected.alike) ?? plain);
 }
 
 /**
@@ -58,7 +73,7 @@ function compared(control: Arm, variant: Arm, critical: number): Compared {
  *   quantile has none but its own
  */
 export function contrastBy(
-  method: Exclude<Method, "quantile">,
+  method: Exclude<Method, "skew-corrected" | "quantile">,
   control: Arm,
   variant: Arm,
   critical: number,
@@ -103,6 +118,36 @@ function byWelch(c: Level, t: Level, critical: number): Compared {
     df: found.df,
     why: null,
     beside: isAbsent(plain) ? [] : [{ method: "normal", low: plain.low, high: plain.high }],
+  };
+}
+
+/**
+ * The skew-corrected difference, relative difference and p; beside it what would count without. z is D / SE as before.
+ * @returns null where the arms' shapes are not known
+ */
+function byCorrection(
+  control: Arm,
+  variant: Arm,
+  c: Level,
+  t: Level,
+  plain: Compared,
+  critical: number,
+  alike: number,
+): Compared | null {
+  const [ofControl, ofVariant] = [shapedArm(control), shapedArm(variant)];
+  const { estimate, standardError, low, high, z, method } = plain.difference;
+  if (isAbsent(ofControl) || isAbsent(ofVariant) || estimate === null || low === null || high === null) return null;
+  const found = skewCorrected(ofControl, ofVariant, estimate, critical, alike);
+  if (isAbsent(found)) return null;
+  const levels = { control: c.value, difference: estimateOf(c, t) };
+  const ofRatio = skewCorrectedRelative(ofControl, ofVariant, levels, critical, alike);
+  return {
+    difference: { estimate, standardError, low: found.low, high: found.high, z, p: found.p, method: "skew-corrected" },
+    relative: isAbsent(ofRatio) ? ofRatio : { ...ofRatio, estimate: relativeOf(c.exact, t.exact) },
+    critical,
+    df: null,
+    why: null,
+    beside: [{ method, low, high }, ...plain.beside],
   };
 }
 

@@ -5,27 +5,33 @@ export { isAbsent } from "./absent.ts";
 export { type AdjustedArm, adjustedArms, meanFromPivot } from "./adjusted-arm.ts";
 export { armFigures } from "./arm-figures.ts";
 export { armOfLevel } from "./arm-of-level.ts";
+// Normal approximation
+export { armsAlike } from "./arms-alike.ts";
 // Covariates
 export { type Balance, balance } from "./balance.ts";
 // More than one question
 export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
+export type { BootstrapT } from "./bootstrap-t.ts";
+export type { BucketCells } from "./bucket-cells.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
-export { contrast, contrastBy } from "./contrast.ts";
+export { type Alike, contrast, contrastBy } from "./contrast.ts";
 export { type Adjusted, adjusted } from "./covariate.ts";
 export { dunnettCritical, dunnettP } from "./dunnett.ts";
-
 // Power and sizes
 export { type Exaggeration, exaggeration } from "./exaggeration.ts";
 // Tests of counts
 export { fisher } from "./fisher.ts";
+export type { Histogram } from "./histogram.ts";
 export { holm } from "./holm.ts";
 export { independence } from "./independence.ts";
+export type { LargestShare } from "./largest-share.ts";
 export { level } from "./level.ts";
 // Moments
 export { type Moments, moments } from "./moments.ts";
 export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
 export { normalQuantile } from "./normal-quantile.ts";
+export { type Normality, normality } from "./normality.ts";
 export { pearson } from "./pearson.ts";
 export {
   beyondWorthwhile,
@@ -41,9 +47,13 @@ export { type QuantileContrast, quantileContrast } from "./quantile.ts";
 export { type QuantileArm, quantileSearch, quantilesCompared } from "./quantile-arms.ts";
 export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
 export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
+export { type Resampled, resampled } from "./resampled.ts";
+export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
+export { type Counts, counts } from "./share.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
 export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";
+export { CAUTION_SHARE, type TailLevel, type TailPair, type Tails } from "./tails.ts";
 
 // Types
 export type { Absent, ArmFigures, Contrast, Difference, Level, Method, Relative } from "./types.ts";

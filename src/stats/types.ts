@@ -47,7 +47,7 @@ export interface ArmFigures {
   readonly largest: number | null;
 }
 
-export type Method = "normal" | "welch" | "score" | "quantile";
+export type Method = "normal" | "welch" | "score" | "skew-corrected" | "quantile";
 
 /** Variant minus control, in the metric's unit. z, p pointwise; low, high the ones that decide (METHODS 2). */
 export interface Difference {

@@ -84,6 +84,8 @@ export function effectOf(metric: Metric, contrast: Contrast, variant = "calendar
     pHolm: null,
     ...placed(metric, contrast),
     power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
 }
 

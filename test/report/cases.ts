@@ -35,6 +35,8 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
     zone,
     eitherWay: false,
     power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
 }
 

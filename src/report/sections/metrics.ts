@@ -53,6 +53,7 @@ export const METHOD: Readonly<Record<Method, string>> = {
   normal: "normal",
   welch: "Welch\u2019s t",
   score: "score",
+  "skew-corrected": "skew-corrected",
   quantile: "order statistics",
 };
 
