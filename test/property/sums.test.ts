@@ -35,6 +35,7 @@ function wrong(change: Partial<CellTable>): string[] {
     countedWithoutNumber: 0,
     cap: null,
     values: [1n, 2n, 4n].map((x) => ({ unit: `u${x}`, variant: 0, bucket: 0, of: x * 1_000_000_000n, per: null })),
+    quantile: null,
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);
