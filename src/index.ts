@@ -4,7 +4,13 @@ import { readFile } from "node:fs/promises";
 import path from "node:path";
 import { type Arm, arms } from "./cells/index.ts";
 import { checks as soundnessChecks } from "./checks/index.ts";
-import { effects as allEffects, conclusion as concluded, withOrderStatistics } from "./decision/index.ts";
+import {
+  adjustedPairs,
+  effects as allEffects,
+  conclusion as concluded,
+  type Pair,
+  withOrderStatistics,
+} from "./decision/index.ts";
 import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
@@ -88,12 +94,15 @@ interface Measured {
   readonly reduction: Reduction;
   /** Per metric, per variant, both in plan order. */
   readonly arms: readonly (readonly Arm[])[];
+  /** The adjusted arms of metrics that the plan adjusts for a covariate. */
+  readonly pairs: readonly Pair[];
 }
 
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
 async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
   const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
-  return { reduction, arms };
+  const pairs = await adjustedPairs(plan, reduction, session.adjusted);
+  return { reduction, arms, pairs };
 }
 
 function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
@@ -105,10 +114,10 @@ function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
 }
 
 /** From counts, cells and arms to the report's files; no file is read or written but the templates. */
-function decisionReport(plan: Plan, planText: string, { reduction, arms }: Measured): Promise<ReportFiles> {
+function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
   const checks = soundnessChecks(plan, reduction);
-  const effects = allEffects(plan, arms, reduction);
-  const conclusion = concluded(plan, effects, checks, reduction, arms);
+  const effects = allEffects(plan, arms, reduction, pairs);
+  const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
   return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, conclusion });
 }

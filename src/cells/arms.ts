@@ -22,12 +22,6 @@ type PartRow = SumsRow & {
 };
 type ScoreRow = SumsRow & { readonly variant: number; readonly smallest: number; readonly largest: number };
 
-/** Of a metric's cells, those that its arms are made from. */
-export interface ArmCells {
-  readonly of: CellTable;
-  readonly ratio: Pick<NonNullable<MetricCells["ratio"]>, "per" | "score"> | null;
-}
-
 /** What an arm is rolled up from; an engine's cells hold more. */
 export interface ArmCells {
   readonly of: CellTable;
@@ -78,7 +72,8 @@ function ratioArm(numerator: PowerSums, denominator: PowerSums, d: PowerSums): A
   };
 }
 
-function partSums(cells: CellTable, variants: number): PowerSums[] {
+/** Sums of one metric part per variant, in plan order; a variant without units gets sums of n 0. */
+export function partSums(cells: CellTable, variants: number): PowerSums[] {
   const { pivot, scale, ...columns } = cells;
   const rows = table(columns)
     .groupby("variant")
@@ -95,7 +90,8 @@ function partSums(cells: CellTable, variants: number): PowerSums[] {
   }));
 }
 
-function scoreSums(cells: ScoreTable, variants: number): PowerSums[] {
+/** The same of doubles measured against 0. */
+export function scoreSums(cells: ScoreTable, variants: number): PowerSums[] {
   const { scale, ...columns } = cells;
   const rows = table(columns)
     .groupby("variant")
@@ -112,12 +108,13 @@ function scoreSums(cells: ScoreTable, variants: number): PowerSums[] {
   }));
 }
 
-function byVariant<Row extends { readonly variant: number }>(
+/** One of each variant, in plan order; `none` where it has no row. */
+export function byVariant<Row extends { readonly variant: number }, Sums>(
   rows: readonly Row[],
   variants: number,
-  none: PowerSums,
-  sums: (row: Row) => PowerSums,
-): PowerSums[] {
+  none: Sums,
+  sums: (row: Row) => Sums,
+): Sums[] {
   const found = new Map(rows.map((row) => [row.variant, sums(row)]));
   return Array.from({ length: variants }, (_, variant) => found.get(variant) ?? none);
 }

@@ -1,9 +1,11 @@
 // Roll-ups
-export { arms } from "./arms.ts";
+export { arms, partSums } from "./arms.ts";
 
 // Exact quotients
-export { type Fraction, fraction, nearestNumber } from "./fraction.ts";
-export { NANO } from "./sums.ts";
+export { exactly, type Fraction, fraction, nearestNumber } from "./fraction.ts";
+// Adjusted contrasts
+export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
+export { NANO, nanoOf } from "./sums.ts";
 
 // Types
-export type { Arm, PowerSums } from "./types.ts";
+export type { Arm, CovariateArm, JointSums, PowerSums } from "./types.ts";

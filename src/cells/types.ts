@@ -1,3 +1,5 @@
+import type { Fraction } from "./fraction.ts";
+
 /**
  * Exact power sums of one group of units: n and S_k, k = 1..4, the sum of u^k with u = (x - pivot) / scale.
  * Groups with the same pivot and scale are merged by adding.
@@ -34,4 +36,43 @@ export type Arm =
       readonly q: string;
       /** Values by rank, 1 the smallest, in 10^-9 of the metric's unit: those that the arm's contrasts ask for. */
       readonly ordered: ReadonlyMap<number, bigint>;
+    }
+  | {
+      /** Of an adjusted contrast: the units' values are y - theta (x - X) (METHODS 1). */
+      readonly kind: "adjusted";
+      readonly summary: "mean" | "proportion";
+      /** Their mean, exact for that theta. */
+      readonly mean: Fraction;
+      /** Their sums; no exact total, for they are computed in doubles. */
+      readonly sums: PowerSums;
+      /** How far a value can be off by that, in the metric's unit. */
+      readonly noise: number;
     };
+
+/**
+ * Exact joint sums of two values (y, x) over the units of an arm that have both: S_jk is the sum of u^j w^k, u = (y - pivot)
+ * / scale with y's pivot and scale, w likewise with x's. Groups with the same pivots and scales are merged by adding.
+ */
+export interface JointSums {
+  readonly n: number;
+  readonly pivots: readonly [y: string, x: string];
+  readonly scales: readonly [y: number, x: number];
+  /** In units of 2^-120. */
+  readonly s10: bigint;
+  readonly s01: bigint;
+  readonly s20: bigint;
+  readonly s11: bigint;
+  readonly s02: bigint;
+  /** Exact sums of y and of x over these units, in 10^-9 of the unit of each. */
+  readonly totals: readonly [y: bigint, x: bigint];
+}
+
+/** One arm of a mean or proportion that is adjusted for a covariate. */
+export interface CovariateArm {
+  /** y over all units with a value. */
+  readonly value: PowerSums;
+  /** x over those of them that have one; its n is how many. Both arms have one pivot and scale. */
+  readonly covariate: PowerSums;
+  /** y and x together over the same units, by the pivots and scales of the two above. */
+  readonly joint: JointSums;
+}

@@ -1,6 +1,7 @@
 import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { allocation } from "./allocation.ts";
+import { balance } from "./balance.ts";
 import { duplicates } from "./duplicates.ts";
 import { filters } from "./filters.ts";
 import { followUp } from "./follow-up.ts";
@@ -21,6 +22,7 @@ const CHECKS: readonly ((plan: Plan, reduction: Reduction) => Check | null)[] = 
   switched,
   unknownVariants,
   followUp,
+  balance,
   filters,
   neverOccurs,
   withoutRows,

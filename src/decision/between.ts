@@ -1,8 +1,9 @@
 import type { Arm } from "../cells/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrast } from "../stats/index.ts";
-import { criticalOf, variancesOf } from "./critical.ts";
-import { arm, controlOf } from "./effects.ts";
+import { contrast, isAbsent } from "../stats/index.ts";
+import { type Pair, pairOf } from "./covariates.ts";
+import { criticalOf } from "./critical.ts";
+import { arm, decidingVariances } from "./effects.ts";
 import { levelsInWords } from "./levels.ts";
 import { NO_POWER } from "./power.ts";
 import { told } from "./told.ts";
@@ -10,21 +11,24 @@ import type { Effect } from "./types.ts";
 
 /**
  * The contrast between the best two of several variants that passed, on one metric, at the critical value that decides: the
- * rule took the larger estimate, and this tells how sure the order of the two is.
+ * rule took the larger estimate, and this tells how sure the order of the two is. Adjusted where the plan adjusts.
  */
 export function betweenSentence(
   plan: Plan,
   metric: Metric,
   arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
   best: string,
   other: string,
 ): string {
   const m = plan.metrics.indexOf(metric);
   const index = (name: string) => plan.variants.findIndex((variant) => variant.name === name);
-  const all = plan.variants.map((_, v) => arm(arms, m, v));
-  const control = index(controlOf(plan).name);
-  const critical = criticalOf(plan, metric, variancesOf(arm(arms, m, control), all.toSpliced(control, 1)));
-  const found = contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), critical);
+  const pair = pairOf(pairs, m, index(other), index(best));
+  const isAdjusted = pair !== null && !isAbsent(pair);
+  const critical = criticalOf(plan, metric, decidingVariances(plan, m, arms, isAdjusted ? pairs : []));
+  const found = isAdjusted
+    ? contrast(pair.control.arm, pair.variant.arm, critical)
+    : contrast(arm(arms, m, index(other)), arm(arms, m, index(best)), critical);
   const effect: Effect = {
     metric: metric.name,
     role: "secondary",
@@ -32,6 +36,8 @@ export function betweenSentence(
     variant: best,
     control: other,
     contrast: found,
+    adjusted: null,
+    notAdjusted: null,
     pAdjusted: null,
     pHolm: null,
     zone: "not-settled",

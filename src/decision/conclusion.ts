@@ -4,8 +4,9 @@ import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { askedSentence } from "./asked.ts";
 import { betweenSentence } from "./between.ts";
+import type { Pair } from "./covariates.ts";
+import { deciding } from "./deciding.ts";
 import { metricOf } from "./measure.ts";
-import { deciding } from "./power.ts";
 import { type Verdict, verdictOn } from "./rule.ts";
 import { adoptSentence, alsoPassed, keepSentence, notSettledSentence, undecidableSentence } from "./sentences.ts";
 import type { Conclusion, Effect } from "./types.ts";
@@ -15,7 +16,7 @@ import { turned } from "./zones.ts";
 
 /**
  * The plan's rule applied (METHODS 2 and 7), in the order of METHODS: undecidable, adopt, keep the control, not settled.
- * @param arms as for `effects`; only where several variants pass, for the contrast between the best two
+ * @param arms and pairs as for `effects`; only where several variants pass, for the contrast between the best two
  */
 export function conclusion(
   plan: Plan,
@@ -23,6 +24,7 @@ export function conclusion(
   checks: readonly Check[],
   reduction: Reduction,
   arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[] = [],
 ): Conclusion {
   const stopped = obstacles(plan, checks, reduction);
   if (stopped.length > 0) {
@@ -44,7 +46,7 @@ export function conclusion(
       decision: "adopt",
       variant: best.variant,
       sentence: `${sentence} ${passedToo(plan, passing)}`,
-      reasons: [...reasons, between(plan, best, second, arms)],
+      reasons: [...reasons, between(plan, best, second, arms, pairs)],
     };
   }
   if (verdicts.every(({ verdict }) => verdict === "blocked")) {
@@ -96,8 +98,14 @@ function passedToo(plan: Plan, [best, ...others]: readonly Verdict[]): string {
   );
 }
 
-function between(plan: Plan, best: Verdict, second: Verdict, arms: readonly (readonly Arm[])[]): string {
+function between(
+  plan: Plan,
+  best: Verdict,
+  second: Verdict,
+  arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
+): string {
   const [first] = best.primaries;
   if (first === undefined) throw new Error("a plan came here without a primary");
-  return betweenSentence(plan, metricOf(first, plan), arms, best.variant, second.variant);
+  return betweenSentence(plan, metricOf(first, plan), arms, pairs, best.variant, second.variant);
 }

@@ -46,6 +46,15 @@ export function variancesOf(control: Arm, variants: readonly Arm[]): Variances {
   return { control: varianceOf(control), variants: variants.map(varianceOf) };
 }
 
+/**
+ * The same where each contrast has a control of its own, as adjusted ones have by their slopes. Only the ratio of the two
+ * variances counts, so each control's is taken as 1. Their slopes apart, the contrasts are as correlated as unadjusted ones.
+ */
+export function variancesOfPairs(pairs: readonly { readonly control: Arm; readonly variant: Arm }[]): Variances {
+  const ratio = (control: number, variant: number) => (control === 0 ? 0 : variant / control);
+  return { control: 1, variants: pairs.map((pair) => ratio(varianceOf(pair.control), varianceOf(pair.variant))) };
+}
+
 function varianceOf(arm: Arm): number {
   const found = level(arm);
   return isAbsent(found) || isAbsent(found.variance) ? 0 : found.variance;

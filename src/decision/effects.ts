@@ -1,8 +1,10 @@
 import type { Arm } from "../cells/types.ts";
 import type { Reduction } from "../engine/types.ts";
 import type { Metric, Plan, Variant } from "../plan/types.ts";
-import { contrast } from "../stats/index.ts";
-import { criticalOf, pOfVariants, type Variances, variancesOf } from "./critical.ts";
+import { contrast, isAbsent } from "../stats/index.ts";
+import { withAdjusted, withPlainP } from "./adjusted.ts";
+import { type Pair, pairOf } from "./covariates.ts";
+import { criticalOf, pOfVariants, type Variances, variancesOf, variancesOfPairs } from "./critical.ts";
 import { withFamilies } from "./families.ts";
 import { analysedUnits, NO_POWER, withPower } from "./power.ts";
 import type { Effect } from "./types.ts";
@@ -14,21 +16,67 @@ import { placed } from "./zones.ts";
  * What decides (primaries, guardrails) has intervals that hold for all variants at once; secondary metrics have
  * pointwise ones.
  * @param arms per metric, per variant, both in plan order
+ * @param pairs the adjusted arms of metrics that the plan adjusts
  */
-export function effects(plan: Plan, arms: readonly (readonly Arm[])[], reduction: Reduction): Effect[] {
+export function effects(
+  plan: Plan,
+  arms: readonly (readonly Arm[])[],
+  reduction: Reduction,
+  pairs: readonly Pair[] = [],
+): Effect[] {
   const units = analysedUnits(reduction);
-  return withFamilies(plan, contrasts(plan, arms)).map((effect) => withPower(effect, plan, units));
+  const found = plan.metrics.map((metric, m) => contrasts(plan, metric, m, arms, pairs));
+  const plain = withFamilies(
+    plan,
+    found.flatMap((metric) => metric.plain),
+  );
+  const deciding = withFamilies(
+    plan,
+    found.flatMap((metric) => metric.deciding),
+  );
+  return withPlainP(deciding, plain).map((effect) => withPower(effect, plan, units));
 }
 
-function contrasts(plan: Plan, arms: readonly (readonly Arm[])[]): Effect[] {
-  const control = plan.variants.findIndex((variant) => variant.isControl);
-  return plan.metrics.flatMap((metric, m) => {
-    const all = plan.variants.map((_, v) => arm(arms, m, v));
-    const variances = variancesOf(arm(arms, m, control), all.toSpliced(control, 1));
-    return plan.variants.flatMap((variant, v) =>
-      v === control ? [] : [effect(plan, metric, variant, arm(arms, m, control), arm(arms, m, v), variances)],
-    );
-  });
+/** The effects of one metric, unadjusted and with what the plan adjusts for. */
+function contrasts(
+  plan: Plan,
+  metric: Metric,
+  m: number,
+  arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
+): { readonly plain: readonly Effect[]; readonly deciding: readonly Effect[] } {
+  const c = indexOfControl(plan);
+  const others = plan.variants.flatMap((variant, v) => (v === c ? [] : [{ variant, v }]));
+  const variances = decidingVariances(plan, m, arms, []);
+  const plain = others.map(({ variant, v }) =>
+    effect(plan, metric, variant, arm(arms, m, c), arm(arms, m, v), variances),
+  );
+  if (metric.adjustFor === null) return { plain, deciding: plain };
+  const found = others.map(({ v }) => pairOf(pairs, m, c, v));
+  return { plain, deciding: withAdjusted(plan, metric, plain, found, decidingVariances(plan, m, arms, pairs)) };
+}
+
+/** The variances of the levels that the contrasts of metric m compare, adjusted where there are adjusted arms. */
+export function decidingVariances(
+  plan: Plan,
+  m: number,
+  arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
+): Variances {
+  const c = indexOfControl(plan);
+  const control = arm(arms, m, c);
+  const others = plan.variants.flatMap((_, v) =>
+    v === c ? [] : [{ variant: arm(arms, m, v), pair: pairOf(pairs, m, c, v) }],
+  );
+  const compared = others.map(({ variant, pair }) =>
+    pair === null || isAbsent(pair) ? { control, variant } : { control: pair.control.arm, variant: pair.variant.arm },
+  );
+  return compared.every((pair) => pair.control === control)
+    ? variancesOf(
+        control,
+        others.map(({ variant }) => variant),
+      )
+    : variancesOfPairs(compared);
 }
 
 function effect(
@@ -50,9 +98,15 @@ function effect(
     contrast: found,
     pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),
     pHolm: null,
+    adjusted: null,
+    notAdjusted: null,
     ...placed(metric, found),
     power: NO_POWER,
   };
+}
+
+function indexOfControl(plan: Plan): number {
+  return plan.variants.indexOf(controlOf(plan));
 }
 
 export function controlOf(plan: Plan): Variant {

@@ -1,12 +1,12 @@
 import type { Plan } from "../plan/types.ts";
 import { benjaminiHochberg, holm } from "../stats/index.ts";
-import { deciding } from "./power.ts";
+import { deciding } from "./deciding.ts";
 import type { Effect } from "./types.ts";
 
 /**
  * p adjusted over what takes several metrics at once (METHODS 2), where each primary and guardrail has its p over the
  * variants already: under `primaries: any` Holm's over the primaries of a variant, on those; Benjamini and Hochberg's over
- * all contrasts of secondary metrics. Beside it Holm's p over the variants of a metric.
+ * all contrasts of secondary metrics. Beside it Holm's p over the variants of a metric, under `any` of all primaries.
  */
 export function withFamilies(plan: Plan, effects: readonly Effect[]): Effect[] {
   const anyIsEnough = plan.decision.primaries === "any";
@@ -19,7 +19,11 @@ export function withFamilies(plan: Plan, effects: readonly Effect[]): Effect[] {
     ({ pAdjusted }) => pAdjusted,
     holm,
   );
-  const beside = adjusted(effects, ({ role, metric }) => (several && role !== "secondary" ? metric : null), pOf, holm);
+  const familyBeside = ({ role, metric }: Effect) => {
+    if (!several || role === "secondary") return null;
+    return anyIsEnough && role === "primary" ? role : `${role} ${metric}`;
+  };
+  const beside = adjusted(effects, familyBeside, pOf, holm);
   return effects.map((effect, i) => ({
     ...effect,
     pAdjusted: secondary[i] ?? primaries[i] ?? effect.pAdjusted,

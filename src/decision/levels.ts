@@ -1,5 +1,6 @@
 import type { Metric, Plan } from "../plan/types.ts";
 import { alike, percentile, quoted, rates } from "../words/index.ts";
+import { deciding } from "./deciding.ts";
 import { counts, measure, metricOf } from "./measure.ts";
 import type { Effect } from "./types.ts";
 
@@ -8,7 +9,7 @@ import type { Effect } from "./types.ts";
  * with "list"'; null when an arm has no figure.
  */
 export function levelsInWords(effect: Effect, plan: Plan): string | null {
-  const { control, variant } = effect.contrast;
+  const { control, variant } = deciding(effect);
   if (control.mean === null || variant.mean === null) return null;
   const metric = metricOf(effect, plan);
   // beside a difference per unit stand levels per unit

@@ -2,6 +2,7 @@ import type { Reduction } from "../engine/types.ts";
 import type { Amount, Plan } from "../plan/types.ts";
 import { beyondWorthwhile, detectable, exaggeration, isAbsent, type Question, unitsFor } from "../stats/index.ts";
 import type { Absent, Contrast } from "../stats/types.ts";
+import { deciding } from "./deciding.ts";
 import { metricOf } from "./measure.ts";
 import type { Effect, Power } from "./types.ts";
 import { ruleOf } from "./zones.ts";
@@ -54,11 +55,6 @@ function distanceOf(effect: Effect, plan: Plan, contrast: Contrast): number | Ab
 function amountOf(amount: Amount | null, { control }: Contrast): number | null {
   if (amount === null || amount.kind === "absolute") return amount === null ? null : amount.value;
   return control.mean !== null && control.mean > 0 ? amount.value * control.mean : null;
-}
-
-/** The contrast that the rule is held against. */
-export function deciding({ contrast }: Effect): Contrast {
-  return contrast;
 }
 
 /** All analysed units of all arms. */

@@ -1,5 +1,6 @@
 import type { Role, Summary } from "../plan/types.ts";
-import type { Contrast } from "../stats/types.ts";
+import type { Balance } from "../stats/index.ts";
+import type { Absent, Contrast } from "../stats/types.ts";
 
 export type Zone =
   | "worthwhile"
@@ -18,18 +19,39 @@ export interface Effect {
   readonly summary: Summary;
   readonly variant: string;
   readonly control: string;
+  /** Unadjusted. */
   readonly contrast: Contrast;
+  /** Adjusted for the plan's covariate: where not null this one decides, and zone, p and power are its. */
+  readonly adjusted: AdjustedContrast | null;
+  /** Why there is none, where the plan asks for one. */
+  readonly notAdjusted: Absent | null;
   /**
    * p adjusted for the family (METHODS 2): of primaries and guardrails for the variants, Dunnett's; where any primary is
    * enough then over the primaries, Holm's; of secondary metrics over all their contrasts, Benjamini and Hochberg's.
    */
   readonly pAdjusted: number | null;
-  /** Holm's p over the variants, shown beside; null for secondary metrics and for one variant. */
+  /** Holm's p over the same family, shown beside; null for secondary metrics and for one variant. */
   readonly pHolm: number | null;
   readonly zone: Zone;
   /** Only on a primary: the interval also excludes a worthwhile loss (METHODS 2, no worthwhile difference either way). */
   readonly eitherWay: boolean;
   readonly power: Power;
+}
+
+/** The contrast of y - theta (x - X), x the plan's covariate (METHODS 1). */
+export interface AdjustedContrast {
+  readonly contrast: Contrast;
+  readonly theta: number;
+  /** X, the mean of x over both arms. */
+  readonly centre: number;
+  /** Share of the variance of the difference that the adjustment takes away. */
+  readonly varianceReduction: number;
+  /** Units whose x is missing, of those with a value. */
+  readonly withoutCovariate: { readonly control: number; readonly variant: number };
+  /** How x itself differs between the arms, where only chance should tell them apart; pointwise. */
+  readonly balance: Balance;
+  /** p of the unadjusted contrast, adjusted for its family as if the plan had no covariate. */
+  readonly pAdjustedOfPlain: number | null;
 }
 
 /** METHODS 4; null where the data or the plan give nothing to compute it from. */

@@ -1,4 +1,5 @@
 import { createReadStream } from "node:fs";
+import { stat } from "node:fs/promises";
 import { pipeline } from "node:stream";
 import { createGunzip } from "node:zlib";
 import { Decompress } from "fzstd";
@@ -45,9 +46,10 @@ async function* zstandard(pieces: AsyncIterable<Uint8Array>): AsyncGenerator<Uin
  * gzip is decompressed, for its end cannot be told otherwise; of Zstandard only the block headers are read.
  */
 export async function isWhole(file: string): Promise<boolean | null> {
-  if (/\.gz$/i.test(file)) return isWholeGzip(file);
-  if (/\.zst$/i.test(file)) return isWholeZstandard(bytesOf(file));
-  return null;
+  if (!/\.(gz|zst)$/i.test(file)) return null;
+  // Not even an empty text packs to no bytes at all.
+  if ((await stat(file)).size === 0) return false;
+  return /\.gz$/i.test(file) ? isWholeGzip(file) : isWholeZstandard(bytesOf(file));
 }
 
 async function isWholeGzip(file: string): Promise<boolean> {

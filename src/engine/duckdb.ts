@@ -21,6 +21,8 @@ export async function openDuckdb(options: DuckdbOptions): Promise<Engine> {
     ...(options.memory === undefined ? {} : { memory_limit: options.memory }),
   });
   const connection = await instance.connect();
+  // Else a time with a zone is written as the machine's zone has it.
+  await connection.run("SET TimeZone = 'UTC'");
   const version = await readVersion(connection);
   return {
     name: "duckdb",

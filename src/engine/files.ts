@@ -80,10 +80,13 @@ export async function fingerprint(file: string): Promise<{ bytes: number; sha256
   return { bytes, sha256: hash.digest("hex") };
 }
 
-/** A path that the engine does not take for a pattern: a link in the work folder where the name holds * ? or [. */
+/**
+ * A path that the engine reads as the file it is: a link in the work folder where it would take the name for a pattern,
+ * or would not know how the file is packed, since it minds case there.
+ */
 export async function enginePath(file: string, workFolder: string, index: number): Promise<string> {
-  if (!/[*?[\]]/.test(file)) return file;
-  const ending = /(\.[a-z]+)(\.gz|\.zst)?$/i.exec(file)?.[0] ?? "";
+  const ending = (/(\.[a-z]+)(\.gz|\.zst)?$/i.exec(path.basename(file))?.[0] ?? "").toLowerCase();
+  if (!/[*?[\]]/.test(file) && file.endsWith(ending)) return file;
   const link = path.join(workFolder, `log-${index}${ending}`);
   await symlink(file, link);
   return link;

@@ -19,7 +19,7 @@ export async function readLists(plan: Plan, layout: Layout, folder: string, engi
     if (filter.kind !== "listed") continue;
     const file = path.resolve(folder, filter.listedIn);
     const delimiter = /\.tsv(\.gz|\.zst)?$/i.test(file) ? "\t" : ",";
-    const header = (await delimitedHeader(file, delimiter, engine)).columns;
+    const header = (await delimitedHeader(file, delimiter)).columns;
     const column = header.findIndex((cell) => unitColumns.includes(cell));
     if (column < 0 && header.length > 1) {
       throw new UnusableLog(

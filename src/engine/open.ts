@@ -1,10 +1,11 @@
 import type { FoundLog, PlanSource, Problem } from "../plan/index.ts";
-import { type Engine, text, textOrNull } from "./engine.ts";
+import { isWhole, textOf } from "./compression.ts";
+import { type Engine, text } from "./engine.ts";
 import { enginePath, type LogFile, logFiles } from "./files.ts";
-import { cells } from "./records.ts";
+import { records } from "./records.ts";
 import { type ColumnKind, type FileGroup, kindOf } from "./source.ts";
-import { jsonKeys, lines, parquetColumns, parquetNames } from "./sql/read.ts";
-import { firstLine, UnusableLog } from "./unusable.ts";
+import { jsonKeys, parquetColumns, parquetNames } from "./sql/read.ts";
+import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
 
 /** A log whose files are found and whose headers are read. */
 export interface OpenLog {
@@ -38,9 +39,9 @@ export async function openLog(
   }
   const groups = new Map<string, FileGroup>();
   for (const [index, { file, path, header }] of opened.entries()) {
-    // An empty file has no rows, and no header to miss a column in.
-    if (header.columns.length === 0) continue;
-    const key = JSON.stringify([file.source, file.format, header]);
+    // A file without a header has no rows, and none to miss a column in; lines of JSON have no header.
+    if (header.columns.length === 0 && file.format !== "ndjson") continue;
+    const key = JSON.stringify([file.source, file.format, header, standsAlone(header) ? index : null]);
     const group = groups.get(key) ?? { source: file.source, format: file.format, files: [], ...header };
     groups.set(key, { ...group, files: [...group.files, { index, path }] });
   }
@@ -53,10 +54,14 @@ export async function openLog(
   return { files, groups: [...groups.values()], found: { columnsBySource }, problems };
 }
 
+/** Several files are told apart by a column that the reader adds: a file with one of that name is read by itself. */
+const standsAlone = ({ engineNames }: Header) => engineNames.some((column) => column.toLowerCase() === "file_index");
+
 async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   try {
     return await readHeader(file, path, wanted, engine);
   } catch (cause) {
+    if ((await isWhole(file.path)) === false) throw endsEarly(file.name);
     throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause, path, file.name)}`, {
       cause,
     });
@@ -66,9 +71,9 @@ async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>
 async function readHeader(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   switch (file.format) {
     case "csv":
-      return delimitedHeader(path, ",", engine);
+      return delimitedHeader(path, ",");
     case "tsv":
-      return delimitedHeader(path, "\t", engine);
+      return delimitedHeader(path, "\t");
     case "ndjson":
       return asText(await jsonHeader(path, wanted, engine), 0);
     case "parquet":
@@ -83,19 +88,24 @@ const asText = (columns: readonly string[], skip: number): Header => ({
   skip,
 });
 
-const HEADER_LINES = 50;
-
-/** The cells of the first record, which a quoted name may spread over several lines. */
-export async function delimitedHeader(path: string, delimiter: string, engine: Engine): Promise<Header> {
-  const rows = await engine.query(lines(path, HEADER_LINES));
-  const texts = rows.map((row) => textOrNull(row, "line") ?? "");
-  const start = texts.findIndex((line) => line !== "");
-  if (start < 0) return asText([], 0);
-  for (let end = start + 1; end <= texts.length; end++) {
-    const header = cells(texts.slice(start, end).join("\n"), delimiter);
-    if (header !== null) return asText(header, start);
+/** The cells of the first record; none in an empty file. */
+export async function delimitedHeader(path: string, delimiter: string): Promise<Header> {
+  for await (const { line, cells } of records(atMost(LONGEST_HEADER, textOf(path)), delimiter)) {
+    if (cells === null) throw new Error("in its header a quote does not close, or more follows the closing one");
+    return asText(cells, line - 1);
   }
   return asText([], 0);
+}
+
+const LONGEST_HEADER = 1 << 24;
+
+async function* atMost(characters: number, pieces: AsyncIterable<string>): AsyncGenerator<string> {
+  let left = characters;
+  for await (const piece of pieces) {
+    left -= piece.length;
+    yield piece;
+    if (left < 0) throw new Error("its header has no end; look for a quote that does not close");
+  }
 }
 
 const SAMPLE_LINES = 2_000;

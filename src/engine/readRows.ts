@@ -8,18 +8,14 @@ import type { OpenLog } from "./open.ts";
 import { rewritten } from "./rewrite.ts";
 import type { FileGroup } from "./source.ts";
 import { type Dialect, rows, sql, unreadableRows } from "./sql/index.ts";
-import { firstLine, UnusableLog } from "./unusable.ts";
+import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
 import type { Step } from "./zone.ts";
 
 /** Bytes and hash of every file, one after the other; a compressed file that ends early stops the run. */
 export async function inputFingerprints(log: OpenLog): Promise<{ bytes: number; sha256: string }[]> {
   const prints: { bytes: number; sha256: string }[] = [];
   for (const file of log.files) {
-    if ((await isWhole(file.path)) === false) {
-      throw new UnusableLog(
-        `${file.name} ends early or is damaged: its compression cannot be read to the end. Fetch the file again.`,
-      );
-    }
+    if ((await isWhole(file.path)) === false) throw endsEarly(file.name);
     prints.push(await fingerprint(file.path));
   }
   return prints;

@@ -11,10 +11,10 @@ export interface AdjustedRequest {
   readonly control: number;
   readonly variant: number;
   readonly theta: number;
-  /** X, the mean of x over both arms. */
-  readonly meanOfX: number;
-  /** Exact decimal text: what y is measured against. */
-  readonly pivot: string;
+  /** Exact decimal texts: what y and x are measured against. */
+  readonly pivots: readonly [y: string, x: string];
+  /** X, the mean of x over both arms, less the pivot of x: so no digit is lost where x is large and hardly varies. */
+  readonly meanFromPivot: number;
 }
 
 /** What can still be asked of the units once the first sums are known. */
@@ -59,8 +59,10 @@ async function valuesAt(metric: number, variant: number, ranks: readonly number[
 function adjustedValue(request: AdjustedRequest, values: readonly MetricValue[], dialect: Dialect): Statement {
   const own = values[request.metric];
   if (own?.covariate == null) throw new Error(`metric ${request.metric} has no covariate`);
-  const y = dialect.toDouble(sql`(${own.value} - CAST(${request.pivot} AS ${dialect.sumType}))`);
-  const x = sql`coalesce((${dialect.toDouble(own.covariate)}) - ${double(request.meanOfX)}, CAST(0 AS DOUBLE))`;
+  const less = (value: Statement, pivot: string) =>
+    sql`(${dialect.toDouble(sql`(${value} - CAST(${pivot} AS ${dialect.sumType}))`)})`;
+  const y = less(own.value, request.pivots[0]);
+  const x = sql`coalesce(${less(own.covariate, request.pivots[1])} - ${double(request.meanFromPivot)}, CAST(0 AS DOUBLE))`;
   return sql`CASE WHEN variant IN (${request.control}, ${request.variant})
-    THEN (${y}) - ${double(request.theta)} * ${x} END`;
+    THEN ${y} - ${double(request.theta)} * ${x} END`;
 }

@@ -27,6 +27,8 @@ const COLUMNS: readonly (readonly [head: string, cell: (effect: EffectJson) => C
   ["relative_low", (e) => e.relative?.low ?? null],
   ["relative_high", (e) => e.relative?.high ?? null],
   ["zone", (e) => e.zone],
+  ["detectable", (e) => e.power.detectable],
+  ["units_for_worthwhile", (e) => e.power.unitsForWorthwhile],
 ];
 
 /** effects.csv: one row an effect, RFC 4180 (comma, CRLF, quotes doubled). What does not exist is an empty cell. */

@@ -2,6 +2,7 @@ import type { Check } from "../checks/types.ts";
 import type { Effect } from "../decision/index.ts";
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
+import type { Contrast } from "../stats/types.ts";
 import { twelveDigits } from "./digits.ts";
 import { rowLine, unitLine } from "./ledger.ts";
 import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson } from "./types.ts";
@@ -83,8 +84,7 @@ function besideFigures<T extends object, F extends object>(own: T, figures: F, o
 }
 
 function effectJson(effect: Effect): EffectJson {
-  const { contrast } = effect;
-  const { difference, relative } = contrast;
+  const { contrast, adjusted } = effect;
   return {
     metric: effect.metric,
     role: effect.role,
@@ -92,20 +92,28 @@ function effectJson(effect: Effect): EffectJson {
     variant: effect.variant,
     control: effect.control,
     arms: { control: contrast.control, variant: contrast.variant },
-    difference: {
-      estimate: difference.estimate,
-      standardError: difference.standardError,
-      low: difference.low,
-      high: difference.high,
-      z: difference.z,
-      p: difference.p,
-      pAdjusted: effect.pAdjusted,
-      method: difference.method,
-    },
-    relative: "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high },
-    adjusted: null,
+    difference: differenceJson(contrast, adjusted === null ? effect.pAdjusted : adjusted.pAdjustedOfPlain),
+    relative: relativeJson(contrast),
+    adjusted:
+      adjusted === null
+        ? null
+        : {
+            difference: differenceJson(adjusted.contrast, effect.pAdjusted),
+            relative: relativeJson(adjusted.contrast),
+            theta: adjusted.theta,
+            varianceReduction: adjusted.varianceReduction,
+          },
     zone: effect.zone,
-    power: { detectable: null, unitsForWorthwhile: null },
+    power: { detectable: effect.power.detectable, unitsForWorthwhile: effect.power.unitsForWorthwhile },
     normality: null,
   };
+}
+
+function differenceJson({ difference }: Contrast, pAdjusted: number | null): EffectJson["difference"] {
+  const { estimate, standardError, low, high, z, p, method } = difference;
+  return { estimate, standardError, low, high, z, p, pAdjusted, method };
+}
+
+function relativeJson({ relative }: Contrast): EffectJson["relative"] {
+  return "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high };
 }

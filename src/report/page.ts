@@ -4,7 +4,7 @@ import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
-import { powerParagraphs } from "./sections/power.ts";
+import { type PowerSection, powerSection } from "./sections/power.ts";
 import type { ReportInputs } from "./types.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
@@ -22,7 +22,7 @@ export interface Page {
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
   readonly metrics: readonly MetricSection[];
-  readonly power: readonly string[];
+  readonly power: PowerSection;
   readonly methods: MethodsSection;
 }
 
@@ -52,7 +52,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
     metrics: metricSections(plan, reduction, effects),
-    power: powerParagraphs(plan, reduction),
+    power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),
   };
 }

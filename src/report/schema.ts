@@ -20,6 +20,24 @@ const arm = z.strictObject({
   largest: numberOrNull,
 });
 
+const difference = z
+  .strictObject({
+    estimate: numberOrNull,
+    standardError: numberOrNull,
+    low: numberOrNull,
+    high: numberOrNull,
+    z: numberOrNull,
+    p: numberOrNull,
+    pAdjusted: numberOrNull,
+    method: z.enum(["normal", "welch", "score", "quantile"]),
+  })
+  .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise.");
+
+const relative = z
+  .strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull })
+  .nullable()
+  .describe("Variant over control minus 1. An end without a limit is null.");
+
 const effect = z.strictObject({
   metric: z.string(),
   role: z.enum(["primary", "secondary", "guardrail"]),
@@ -27,23 +45,12 @@ const effect = z.strictObject({
   variant: z.string(),
   control: z.string(),
   arms: z.strictObject({ control: arm, variant: arm }),
-  difference: z
-    .strictObject({
-      estimate: numberOrNull,
-      standardError: numberOrNull,
-      low: numberOrNull,
-      high: numberOrNull,
-      z: numberOrNull,
-      p: numberOrNull,
-      pAdjusted: numberOrNull,
-      method: z.enum(["normal", "welch", "score", "quantile"]),
-    })
-    .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise."),
-  relative: z
-    .strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull })
+  difference,
+  relative,
+  adjusted: z
+    .strictObject({ difference, relative, theta: z.number(), varianceReduction: z.number() })
     .nullable()
-    .describe("Variant over control minus 1. An end without a limit is null."),
-  adjusted: z.null(),
+    .describe("Adjusted for the plan's covariate. Where not null its difference decides, and zone and power are its."),
   zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
   power: z.strictObject({ detectable: numberOrNull, unitsForWorthwhile: numberOrNull }),
   normality: z.null(),

@@ -61,7 +61,13 @@ export interface EffectJson {
   readonly arms: { readonly control: ArmFigures; readonly variant: ArmFigures };
   readonly difference: Omit<Difference, "method"> & { readonly pAdjusted: number | null; readonly method: string };
   readonly relative: Relative | null;
-  readonly adjusted: null;
+  /** Where not null, its difference decides. */
+  readonly adjusted: {
+    readonly difference: EffectJson["difference"];
+    readonly relative: Relative | null;
+    readonly theta: number;
+    readonly varianceReduction: number;
+  } | null;
   readonly zone: Zone;
   readonly power: { readonly detectable: number | null; readonly unitsForWorthwhile: number | null };
   readonly normality: null;

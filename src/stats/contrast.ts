@@ -22,7 +22,7 @@ type Compared = Omit<Contrast, "control" | "variant">;
  * about 0, and the intervals that stand beside.
  *
  * Which method counts, first that applies: order statistics (a quantile), score (a proportion with under 10 successes or failures in an arm), Welch
- * (means and ratios with under 200 units in an arm), normal.
+ * (means, adjusted or not, and ratios with under 200 units in an arm), normal.
  * @param critical above 0, on the normal's scale, of one contrast or of several at once: low and high are held at it, and
  *   Welch takes t(df) at the same tail; z and p are of this contrast alone
  */
@@ -39,7 +39,7 @@ function compared(control: Arm, variant: Arm, critical: number): Compared {
   const [ofControl, ofVariant] = [countsOf(control), countsOf(variant)];
   const isShare = ofControl !== null && ofVariant !== null;
   const few = isShare && (hasFewEvents(ofControl) || hasFewEvents(ofVariant));
-  const small = !isShare && Math.min(units(control), units(variant)) < SMALL_ARM;
+  const small = !isShare && !isAdjustedShare(control) && Math.min(units(control), units(variant)) < SMALL_ARM;
   const method = few ? "score" : small ? "welch" : "normal";
 
   if (isAbsent(c) || isAbsent(t)) {
@@ -121,6 +121,10 @@ function withoutInterval(estimate: number | null, method: Method, why: Absent, c
 
 function countsOf(arm: Arm): Counts | null {
   return arm.kind === "proportion" ? counts(arm.sums) : null;
+}
+
+function isAdjustedShare(arm: Arm): boolean {
+  return arm.kind === "adjusted" && arm.summary === "proportion";
 }
 
 function units(arm: Arm): number {

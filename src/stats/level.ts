@@ -1,4 +1,5 @@
 import type { Arm } from "../cells/types.ts";
+import { adjustedLevel } from "./adjusted-arm.ts";
 import { meanLevel } from "./mean.ts";
 import { quantileLevel } from "./quantile-arms.ts";
 import { ratioOfTotals } from "./ratio-of-totals.ts";
@@ -16,6 +17,8 @@ export function level(arm: Arm): Level | Absent {
       return ratioOfTotals(arm);
     case "quantile":
       return quantileLevel(arm);
+    case "adjusted":
+      return adjustedLevel(arm);
     default:
       return unknown(arm);
   }

@@ -15,6 +15,8 @@ export interface Absent {
     | "no-width"
     /** What is adjusted for does not vary within the arms. */
     | "same-covariate"
+    /** No unit has a value of what is adjusted for. */
+    | "no-covariate"
     /** A worthwhile effect is to be shown, and the plan expects none above it. */
     | "no-expected-effect"
     /** What rests on a variance, asked of a quantile. */

@@ -1,5 +1,6 @@
 // numbers
 
+export { atLeast, casesText, spanText } from "./cases.ts";
 export { chanceText, pText } from "./chance.ts";
 // nouns and days
 export { type Day, dateSpan, dateText } from "./dates.ts";

@@ -269,7 +269,7 @@ describe("what comes next", () => {
     expect(next({ ...FERRY, plannedUnits: 100_000 }, [open, HELD])).toEqual([
       'This is not proof that nothing changed. Of Booked with "calendar" a fall of more than 2.6% and a rise of more than 7.8% are unlikely (95% interval).',
       "Why: 42,828 visitors were counted; the plan asked for 100,000.",
-      "What would settle it: a new test with more visitors, sized beforehand for 5% of Booked and 5% of Support contacts.",
+      expect.stringMatching(/^What would settle it: a new test with /), // its size: power.test.ts
       'Adding days to this test now and looking again would make a false "adopt" more likely: plan the looks first.',
       'Until then: stay with "list", unless there are other reasons for "calendar".',
     ]);

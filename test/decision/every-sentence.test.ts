@@ -15,6 +15,7 @@ import type { Absent, Contrast } from "../../src/stats/types.ts";
 import { arbitraryLog } from "../checks/arbitrary.ts";
 import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
 import { contrastOf, type Ends, effectOf, unmeasurable, withoutRelative } from "./make.ts";
+import { share } from "./make-arms.ts";
 import { BROKEN, NEVER_USED } from "./words-never-used.ts";
 
 const ABSENT: readonly Absent["absent"][] = [
@@ -81,13 +82,15 @@ function metrics(): Metric[] {
 }
 
 function plansFor(metric: Metric): Plan[] {
-  const others = metric.role === "primary" ? [] : [metricOf({ name: "Other", role: "primary" })];
-  return (["shown-better", "shown-worthwhile"] as const).map((adoptWhen) =>
-    planOf({
-      metrics: [metric, ...others],
-      decision: { confidence: 0.95, power: 0.8, adoptWhen, primaries: "all", interval: "normal" },
-    }),
-  );
+  const other = metricOf({ name: "Other", role: "primary" });
+  const others = metric.role === "primary" ? [] : [other];
+  const rule = planOf().decision;
+  return [
+    planOf({ metrics: [metric, ...others], decision: { ...rule, adoptWhen: "shown-better" } }),
+    planOf({ metrics: [metric, ...others], decision: { ...rule, adoptWhen: "shown-worthwhile" } }),
+    // "Other" is better throughout, and here it is enough
+    planOf({ metrics: [metric, other], decision: { ...rule, primaries: "any" } }),
+  ];
 }
 
 function sentences(effect: Effect, plan: Plan): string[] {
@@ -174,7 +177,8 @@ describe("an undecidable report", () => {
         const effects = plan.metrics.flatMap((metric) =>
           plan.variants.slice(1).map(({ name }) => effectOf(metric, contrastOf(0.12, ends), name)),
         );
-        const { decision, sentence, reasons } = conclusion(plan, effects, found, reduction, []);
+        const arms = plan.metrics.map(() => plan.variants.map(() => share(6000))); // of use where several pass
+        const { decision, sentence, reasons } = conclusion(plan, effects, found, reduction, arms);
         fc.pre(decision === "undecidable");
         for (const text of [sentence, ...reasons]) expect(text).not.toMatch(/interval|% (more|fewer)|of 100 /);
       }),

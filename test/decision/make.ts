@@ -78,6 +78,8 @@ export function effectOf(metric: Metric, contrast: Contrast, variant = "calendar
     variant,
     control: "list",
     contrast,
+    adjusted: null,
+    notAdjusted: null,
     pAdjusted: null,
     pHolm: null,
     ...placed(metric, contrast),

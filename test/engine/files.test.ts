@@ -137,9 +137,13 @@ describe("the path that the engine is given", () => {
       expect(readlinkSync(link)).toBe(join(folder, name));
     }
   });
+  it("has its ending in small letters, for the engine minds them", async () => {
+    expect(await enginePath("/x/A.CSV.GZ", folder, 210)).toBe(join(folder, "log-210.csv.gz"));
+    expect(await enginePath("/x/A.csv.gz", folder, 211)).toBe("/x/A.csv.gz");
+  });
   it("keeps the ending that tells how the file is packed", async () => {
     expect(await enginePath("/x/[a].csv.gz", folder, 200)).toBe(join(folder, "log-200.csv.gz"));
-    expect(await enginePath("/x[1]/a.b.NDJSON.ZST", folder, 201)).toBe(join(folder, "log-201.NDJSON.ZST"));
+    expect(await enginePath("/x[1]/a.b.NDJSON.ZST", folder, 201)).toBe(join(folder, "log-201.ndjson.zst"));
     expect(await enginePath("/x*/a.parquet", folder, 202)).toBe(join(folder, "log-202.parquet"));
   });
 });

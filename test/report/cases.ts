@@ -1,5 +1,6 @@
+import { withFamilies } from "../../src/decision/families.ts";
 import { placed } from "../../src/decision/index.ts";
-import { NO_POWER, withPower } from "../../src/decision/power.ts";
+import { analysedUnits, NO_POWER, withPower } from "../../src/decision/power.ts";
 import type { Effect, Zone } from "../../src/decision/types.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import type { ReportInputs } from "../../src/report/types.ts";
@@ -10,7 +11,6 @@ import { booked, calendar, contacts, fare, farePlan, list, perSearch, planText }
 import { type HandFlow, reductionOf } from "./reductions.ts";
 
 const N = 50_150;
-const N_ALL = 100_301;
 const flow: HandFlow = {
   analysed: [50_120, 50_181],
   byFilter: [[101, 98]],
@@ -28,6 +28,8 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
     variant,
     control: "list",
     contrast,
+    adjusted: null,
+    notAdjusted: null,
     pAdjusted: metric.role === "secondary" ? null : contrast.difference.p,
     pHolm: null,
     zone,
@@ -37,18 +39,18 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
 }
 
 function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly flow?: HandFlow }): ReportInputs {
+  const { plan, effects = [] } = over;
+  const reduction = reductionOf(plan, over.flow ?? flow);
+  const units = analysedUnits(reduction);
   return {
     planText,
     planSha256: "3f9a20c1".repeat(8),
     version: "0.1.0",
-    reduction: reductionOf(over.plan, over.flow ?? flow),
+    reduction,
     checks: [allocationPassed, ...otherChecks.slice(0, 2), duplicatesCaution, ...otherChecks.slice(2)],
-    effects: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
-    ...(over.effects === undefined
-      ? {}
-      : { effects: over.effects.map((effect) => withPower(effect, over.plan, N_ALL)) }),
+    effects: withFamilies(plan, effects).map((effect) => withPower(effect, plan, units)),
   };
 }
 

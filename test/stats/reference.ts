@@ -115,3 +115,58 @@ export const quantiles = () =>
       relative: { estimate: string; low: string | null; high: string | null } | null;
     }[]
   >("quantile.json");
+
+/** R 4.2.2, MASS 7.3-58.2: adjusted contrasts of R's own data. */
+export const covariates = () =>
+  read<
+    {
+      name: string;
+      control: { y: number[]; x: (number | null)[] };
+      variant: { y: number[]; x: (number | null)[] };
+      theta: string;
+      centre: string;
+      levelControl: string;
+      levelVariant: string;
+      standardError: string;
+      t: string;
+      df: string;
+      varianceReduction: string;
+      regression: { slope: string; difference: string };
+      interacted: string;
+      balance: { difference: string; t: string; p: string; standardised: string };
+    }[]
+  >("covariate.json");
+
+interface AdjustedShape {
+  readonly mean: string;
+  readonly sd: string;
+  readonly skewness: string;
+  readonly kurtosis: string;
+}
+
+/** R 4.2.2: adjusted contrasts on R's own data by cov, var and t.test, slopes of lm where those are the same. */
+export const adjustedContrasts = () =>
+  read<
+    {
+      name: string;
+      y: number[];
+      x: (number | null)[];
+      variant: number[];
+      method: "normal" | "welch";
+      theta: string;
+      meanOfX: string;
+      varianceReduction: string;
+      estimate: string;
+      standardError: string;
+      low: string;
+      high: string;
+      p: string;
+      relative: string;
+      relativeLow: string;
+      relativeHigh: string;
+      slope: string | null;
+      effect: string | null;
+      control: AdjustedShape;
+      treated: AdjustedShape;
+    }[]
+  >("adjusted-contrast.json");

@@ -91,18 +91,21 @@ describe("the tails of the normal interval", () => {
   });
 
   // A million simulated tests each; test/reference/ratio-tails.py.
-  it.each(ratioTails())("count the denominator of a ratio: $control against $variant, a = b to the power $power", (simulated) => {
-    const { sd, skewness, kurtosis, covariance } = simulated;
-    const arm = (n: number, c: number | null) => shaped(n, sd, skewness, kurtosis, c);
-    const gap = (c: number | null) => {
-      const expansion = expansionOf(arm(simulated.control, c), arm(simulated.variant, c));
-      const { lowerTail, upperTail } = tailsOf(Z, expansion);
-      return Math.max(Math.abs(lowerTail - simulated.below), Math.abs(upperTail - simulated.above));
-    };
-    expect(gap(covariance)).toBeLessThan(0.8 * gap(null));
-    // Arms of 500 and more with moderate skewness: the expansion is then good to a quarter of a percent.
-    if (Math.min(simulated.control, simulated.variant) >= 500) expect(gap(covariance)).toBeLessThan(0.0025);
-  });
+  it.each(ratioTails())(
+    "count the denominator of a ratio: $control against $variant, a = b to the power $power",
+    (simulated) => {
+      const { sd, skewness, kurtosis, covariance } = simulated;
+      const arm = (n: number, c: number | null) => shaped(n, sd, skewness, kurtosis, c);
+      const gap = (c: number | null) => {
+        const expansion = expansionOf(arm(simulated.control, c), arm(simulated.variant, c));
+        const { lowerTail, upperTail } = tailsOf(Z, expansion);
+        return Math.max(Math.abs(lowerTail - simulated.below), Math.abs(upperTail - simulated.above));
+      };
+      expect(gap(covariance)).toBeLessThan(0.8 * gap(null));
+      // Arms of 500 and more with moderate skewness: the expansion is then good to a quarter of a percent.
+      if (Math.min(simulated.control, simulated.variant) >= 500) expect(gap(covariance)).toBeLessThan(0.0025);
+    },
+  );
 
   it("report the worse of pooled and own shapes, and say that the shapes differ", () => {
     const alike = present(tails(exponential(1000), exponential(1000), Z));

@@ -18,6 +18,8 @@ export interface Dialect {
   compared(text: Statement, operator: Comparison, value: string): Statement;
   /** Microseconds on the clock that the text shows; NULL when unreadable. */
   clockUs(text: Statement): Statement;
+  /** Microseconds of a timestamp, with zone or without; NULL when it is infinite or beyond the calendar. */
+  epochUs(timestamp: Statement): Statement;
   /** Microseconds to subtract where the text states an offset, else NULL: the clock is the plan's. */
   statedOffsetUs(text: Statement): Statement;
   /** 64-bit hash, for finding what may be equal; equality itself is tested on the text. */
@@ -39,6 +41,7 @@ const SHORT_NUMBER = "[+-]?[0-9]{1,9}([.][0-9]{1,9})?";
 const DATE = "[0-9]{4}-[0-9]{2}-[0-9]{2}";
 const OFFSET = "Z|[+-]([01][0-9]|2[0-3])(:?[0-5][0-9])?";
 const TIME = `${DATE}([T ]([01][0-9]|2[0-3]):[0-5][0-9](:[0-5][0-9]([.][0-9]+)?)?(${OFFSET})?)?`;
+const PLAIN_TIME = `${DATE}[T ]([01][0-9]|2[0-3]):[0-5][0-9]:[0-5][0-9]([.][0-9]+)?Z?`;
 const EPOCH = "[+-]?[0-9]+";
 // The end of the calendar that plans are read with, on either side of 1970.
 const LAST_US = 8_640_000_000_000_000_000n;
@@ -63,12 +66,16 @@ export const duckdb: Dialect = {
     return sql`coalesce(CASE ${short}
       WHEN regexp_full_match(${text}, ${NUMBER}) THEN ${comparedExactly(text, operator, value)} END, FALSE)`;
   },
+  // Most logs write seconds and Z or nothing: those are cast as they stand, the rest without their offset.
   clockUs: (text) => sql`CASE
+    WHEN regexp_full_match(${text}, ${PLAIN_TIME}) THEN epoch_us(try_cast(${text} AS TIMESTAMP))
     WHEN regexp_full_match(${text}, ${TIME}) THEN epoch_us(try_cast(regexp_replace(${text}, ${`([T ].*)(${OFFSET})$`}, '\\1') AS TIMESTAMP))
-    WHEN regexp_full_match(${text}, ${EPOCH}) THEN ${epochUs(text, sql`length(ltrim(${text}, '+-'))`)}
+    WHEN regexp_full_match(${text}, ${EPOCH}) THEN ${bareEpoch(text, sql`length(ltrim(${text}, '+-'))`)}
     END`,
+  epochUs: (timestamp) => sql`CASE WHEN isfinite(${timestamp}) THEN ${withinCalendar(sql`epoch_us(${timestamp})`)} END`,
   statedOffsetUs: (text) => sql`CASE
-    WHEN regexp_full_match(${text}, ${EPOCH}) OR ends_with(${text}, 'Z') THEN 0
+    WHEN ends_with(${text}, 'Z') THEN 0
+    WHEN regexp_full_match(${text}, ${EPOCH}) THEN 0
     WHEN regexp_matches(${text}, ${`[T ].*[+-][0-9]{2}(:?[0-9]{2})?$`}) THEN ${offset(sql`regexp_extract(${text}, '[+-][0-9]{2}(:?[0-9]{2})?$')`)}
     END`,
   hash: (...values) => sql`hash(${join(values, ", ")})`,
@@ -82,10 +89,13 @@ export const duckdb: Dialect = {
     sql`arg_max(${value}, {'at': ${atUs}, 'value': -${value}}) FILTER (WHERE ${condition} AND ${value} IS NOT NULL)`,
 };
 
-function epochUs(text: Statement, digits: Statement): Statement {
+function bareEpoch(text: Statement, digits: Statement): Statement {
   const us = sql`try_cast(${text} AS BIGINT) * CASE WHEN ${digits} <= 11 THEN 1000000 WHEN ${digits} <= 14 THEN 1000 ELSE 1 END`;
-  return sql`CASE WHEN ${us} BETWEEN ${-LAST_US} AND ${LAST_US} THEN ${us} END`;
+  return withinCalendar(us);
 }
+
+const withinCalendar = (us: Statement): Statement =>
+  sql`CASE WHEN ${us} BETWEEN ${-LAST_US} AND ${LAST_US} THEN ${us} END`;
 
 function offset(text: Statement): Statement {
   const digits = sql`replace(${text}, ':', '')`;

@@ -14,7 +14,10 @@ import { join, name, type Statement, sql } from "./sql.ts";
 const NO_DELIMITER = "\u0001";
 // Nested, since AND may look at the type of what is no JSON, which is an error.
 const IS_OBJECT = sql`CASE WHEN json_valid(line) THEN json_type(line) = 'OBJECT' ELSE FALSE END`;
-const LONGEST_LINE = 32 * 1024 * 1024;
+const JSON_BLANKS = " \t\r";
+const LONGEST_LINE = 4 * 1024 * 1024;
+// Without it the reader takes sixteen times the longest line for each piece, more than a small memory limit holds.
+const PIECE = 16 * 1024 * 1024;
 
 export function read(group: FileGroup, wanted: readonly string[], isNumbered = false): Statement {
   switch (group.format) {
@@ -34,12 +37,6 @@ export function kindsOf(group: FileGroup, wanted: readonly string[]): ColumnKind
   return wanted.map((column) => group.kinds[group.columns.indexOf(column)] ?? "text");
 }
 
-/** The lines of a file as they stand, whatever its compression; `limit` 0 for all. */
-export function lines(path: string, limit: number): Statement {
-  const some = limit === 0 ? sql`` : sql`LIMIT ${limit}`;
-  return sql`SELECT line FROM ${lineReader([path], sql`ignore_errors = true`)} ${some}`;
-}
-
 /** Keys of the JSON objects in some files; the first `limit` lines, 0 for all. */
 export function jsonKeys(paths: readonly string[], limit: number): Statement {
   const some = limit === 0 ? sql`` : sql`LIMIT ${limit}`;
@@ -48,10 +45,13 @@ export function jsonKeys(paths: readonly string[], limit: number): Statement {
     FROM (SELECT line FROM ${lineReader(paths, sql`ignore_errors = true`)} ${some})`;
 }
 
-export const parquetColumns = (path: string): Statement => sql`DESCRIBE SELECT * FROM read_parquet(${path})`;
+export const parquetColumns = (path: string): Statement => sql`DESCRIBE SELECT * FROM ${parquetReader(sql`${path}`)}`;
 
 /** Top-level names as the file has them: the engine's own differ where two are alike but for case. */
 export const parquetNames = (path: string): Statement => sql`SELECT name, num_children FROM parquet_schema(${path})`;
+
+// What folders are called ("arm=list/") says nothing about the rows in them.
+const parquetReader = (files: Statement): Statement => sql`read_parquet(${files}, hive_partitioning = false)`;
 
 function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: string, isNumbered: boolean): Statement {
   // All columns as text, by position: no detection, and names that differ in case only stay apart.
@@ -60,11 +60,16 @@ function readDelimited(group: FileGroup, wanted: readonly string[], delimiter: s
     const at = group.columns.indexOf(column);
     return at < 0 ? sql`CAST(NULL AS VARCHAR) AS ${name(`c${i}`)}` : sql`r.${name(`c${at}`)} AS ${name(`c${i}`)}`;
   });
+  // The reader takes a blank line for a row where there is one column; an empty cell in quotes is one.
+  const [only, more] = group.columns;
+  const isRow = only !== undefined && more === undefined ? sql`WHERE r.c0 IS NOT NULL` : sql``;
   return sql`
     SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...numbered(isNumbered, sql`row_number() OVER ()`), ...picked])}
     FROM read_csv(${paths(group)}, auto_detect = false, header = true, columns = {${join(columns, ", ")}},
-      delim = ${delimiter}, quote = '"', escape = '"', nullstr = '', strict_mode = true, store_rejects = true,
-      max_line_size = ${LONGEST_LINE}, skip = ${group.skip}) AS r`;
+      delim = ${delimiter}, quote = '"', escape = '"', nullstr = '', allow_quoted_nulls = false, strict_mode = true,
+      store_rejects = true, max_line_size = ${LONGEST_LINE}, buffer_size = ${PIECE}, skip = ${group.skip},
+      hive_partitioning = false) AS r
+    ${isRow}`;
 }
 
 function readJson(group: FileGroup, wanted: readonly string[], isNumbered: boolean): Statement {
@@ -81,23 +86,22 @@ function readJson(group: FileGroup, wanted: readonly string[], isNumbered: boole
           sql`store_rejects = true`,
         )} AS r
       )
-      WHERE trim(line) <> ''
+      WHERE trim(line, ${JSON_BLANKS}) <> ''
     )`;
 }
 
 /**
  * A value's text. Numbers with a fraction or exponent are cut from the line itself: the JSON reader passes them through
- * a double and gives 123456789.12345679 for 123456789.123456789. What is cut must be the same double (a nested object may
- * hold the same key).
+ * a double and gives 123456789.12345679 for 123456789.123456789. What is cut must be the same double, for a nested object
+ * may hold the same key.
  */
 function jsonText(column: string): Statement {
-  const key = JSON.stringify(column);
-  const at = `$.${key}`;
-  const pattern = `${escapeRegExp(key)}[ \\t]*:[ \\t]*(-?[0-9]+([.][0-9]+)?([eE][+-]?[0-9]+)?)`;
+  const pattern = `${escapeRegExp(JSON.stringify(column))}[ \\t]*:[ \\t]*(-?[0-9]+([.][0-9]+)?([eE][+-]?[0-9]+)?)`;
+  // A pointer of RFC 6901: every other path of the engine gives some characters a meaning.
+  const at = `/${column.replaceAll("~", "~0").replaceAll("/", "~1")}`;
   const plain = sql`json_extract_string(line, ${at})`;
-  const cut = sql`lower(regexp_extract(line, ${pattern}, 1))`;
-  return sql`CASE WHEN json_type(line, ${at}) = 'DOUBLE' AND try_cast(${cut} AS DOUBLE) = try_cast(${plain} AS DOUBLE)
-    THEN ${cut} ELSE ${plain} END`;
+  const cut = sql`list_filter(regexp_extract_all(line, ${pattern}, 1), lambda digits: try_cast(digits AS DOUBLE) = try_cast(${plain} AS DOUBLE))[1]`;
+  return sql`CASE WHEN json_type(line, ${at}) = 'DOUBLE' THEN coalesce(lower(${cut}), ${plain}) ELSE ${plain} END`;
 }
 
 function readParquet(group: FileGroup, wanted: readonly string[], isNumbered: boolean): Statement {
@@ -108,8 +112,8 @@ function readParquet(group: FileGroup, wanted: readonly string[], isNumbered: bo
       : sql`r.${name(engineName)} AS ${name(`c${i}`)}`;
   });
   return sql`
-    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...numbered(isNumbered, sql`r.file_row_number + 1`), ...picked])}
-    FROM read_parquet(${paths(group)}) AS r`;
+    SELECT ${comma([fileIndex(group), sql`TRUE AS readable`, ...numbered(isNumbered, sql`row_number() OVER ()`), ...picked])}
+    FROM ${parquetReader(paths(group))} AS r`;
 }
 
 const numbered = (isNumbered: boolean, ordinal: Statement): Statement[] =>
@@ -121,7 +125,8 @@ function lineReader(files: readonly string[], errors: Statement): Statement {
     ", ",
   )}], auto_detect = false, header = false,
     columns = {line: 'VARCHAR'}, delim = ${NO_DELIMITER}, quote = '', escape = '', nullstr = '',
-    strict_mode = false, max_line_size = ${LONGEST_LINE}, ${errors})`;
+    strict_mode = false, max_line_size = ${LONGEST_LINE}, buffer_size = ${PIECE},
+    hive_partitioning = false, ${errors})`;
 }
 
 function fileIndex(group: FileGroup): Statement {
@@ -166,18 +171,11 @@ export function asTime(
 ): { clockUs: Statement; offsetUs: Statement } {
   switch (kind) {
     case "instant":
-      return {
-        clockUs: sql`CASE WHEN isfinite(${column}) THEN epoch_us(${column}) END`,
-        offsetUs: sql`CAST(0 AS BIGINT)`,
-      };
+      return { clockUs: dialect.epochUs(column), offsetUs: sql`CAST(0 AS BIGINT)` };
     case "timestamp":
-    case "date": {
-      const plain = sql`CAST(${column} AS TIMESTAMP)`;
-      return {
-        clockUs: sql`CASE WHEN isfinite(${plain}) THEN epoch_us(${plain}) END`,
-        offsetUs: sql`CAST(NULL AS BIGINT)`,
-      };
-    }
+    case "date":
+      // Dates reach further than timestamps do.
+      return { clockUs: dialect.epochUs(sql`try_cast(${column} AS TIMESTAMP)`), offsetUs: sql`CAST(NULL AS BIGINT)` };
     default: {
       const text = asText(column, kind);
       return { clockUs: dialect.clockUs(text), offsetUs: sql`CAST(${dialect.statedOffsetUs(text)} AS BIGINT)` };

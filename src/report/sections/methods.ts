@@ -1,4 +1,4 @@
-import type { Effect } from "../../decision/index.ts";
+import { anyIsEnough, type Effect } from "../../decision/index.ts";
 import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";
@@ -66,12 +66,20 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
 
 /** Only what this report uses. */
 function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["methods"] {
-  const used = new Set(effects.map((effect) => effect.contrast.difference.method));
-  const beside = new Set(effects.flatMap((effect) => effect.contrast.beside.map(({ method }) => method)));
+  const shown = effects.flatMap(({ contrast, adjusted }) =>
+    adjusted === null ? [contrast] : [contrast, adjusted.contrast],
+  );
+  const used = new Set(shown.map(({ difference }) => difference.method));
+  const beside = new Set(shown.flatMap((contrast) => contrast.beside.map(({ method }) => method)));
   const has = (summary: Effect["summary"]) => effects.some((effect) => effect.summary === summary);
   const others = plan.variants.filter((variant) => !variant.isControl).length;
   const confidence = planPercent(plan.decision.confidence);
   const { many } = plan.unitCalled;
+  const primaries = plan.metrics.filter(({ role }) => role === "primary").length;
+  const forInformation = effects.filter(({ role }) => role === "secondary").length;
+  const simply = effects.some(
+    ({ role, contrast, summary }) => role !== "secondary" && (summary === "quantile" || hasNoSpread(contrast)),
+  );
   const all: readonly (MethodsSection["methods"][number] & { readonly when: boolean })[] = [
     {
       when: [...used].some((method) => method !== "quantile"),
@@ -106,6 +114,13 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
         "Hyndman and Fan 1996, The American Statistician 50, 361-365, type 1; Conover 1999, Practical Nonparametric Statistics, 3.2; Zou and Donner 2008, Statistics in Medicine 27, 1693-1702; Donner and Zou 2012, Statistical Methods in Medical Research 21, 347-359",
     },
     {
+      when: effects.some(({ adjusted }) => adjusted !== null),
+      name: "Adjusted differences",
+      how: `A ${plan.unitCalled.one}\u2019s value less a share of what was known of it before: the share that leaves the difference the smallest variance. Levels keep their height, since only distances from the mean of both groups are taken off. The unadjusted difference stands under it and does not decide.`,
+      source:
+        "Deng, Xu, Kohavi and Walker 2013; Yang and Tsiatis 2001, The American Statistician 55, 314-321; Lin 2013, Annals of Applied Statistics 7, 295-318",
+    },
+    {
       when: used.has("welch") || beside.has("welch"),
       name: "Small groups",
       how: `Under 200 ${many} in a group, Student\u2019s t with the degrees of freedom of unequal variances takes the place of the normal distribution.`,
@@ -114,20 +129,40 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
     {
       when: others > 1,
       name: "Several variants",
-      how: `Each variant is compared with the control. For what decides and what must not get worse, the ${others} intervals hold together with ${confidence} confidence: the error is shared out evenly over the variants, and p is multiplied by their number.`,
-      source: "Bonferroni; see Dunn 1961, Journal of the American Statistical Association 56, 52-64",
+      how: `Each variant is compared with the control. For what decides and what must not get worse, the ${others} intervals hold together with ${confidence} confidence: they share the control, and their critical value allows for that. p is adjusted in one step by the same distribution; Holm\u2019s, by several steps, stands beside it and does not decide.${simply ? " Where that distribution is not to be had, the error is shared out evenly over the variants: for quantiles, and where a group has no spread." : ""}`,
+      source: `Dunnett 1955, Journal of the American Statistical Association 50, 1096-1121; by Dunnett 1989, Applied Statistics 38, 564-579; Holm 1979, Scandinavian Journal of Statistics 6, 65-70${simply ? "; Dunn 1961, Journal of the American Statistical Association 56, 52-64" : ""}`,
     },
     {
-      when: effects.filter((effect) => effect.role === "primary").length > others,
+      when: primaries > 1 && !anyIsEnough(plan),
       name: "Several deciding measures",
       how: "Every one of them must pass, so none of their intervals needs to be wider.",
       source: "Berger 1982, Technometrics 24, 295-300",
+    },
+    {
+      when: anyIsEnough(plan),
+      name: "Several deciding measures",
+      how: `Any one of the ${primaries} is enough, so the error is shared out evenly over them: all their intervals hold together with ${confidence} confidence. Their p are adjusted for their number by steps. The limits of what must not get worse must all hold, so those intervals are not wider.`,
+      source:
+        "Dunn 1961, Journal of the American Statistical Association 56, 52-64; Holm 1979, Scandinavian Journal of Statistics 6, 65-70; Berger 1982",
+    },
+    {
+      when: forInformation > 1,
+      name: "Measures for information",
+      how: `Each interval holds alone. p is adjusted over their ${forInformation} tests so that, of those it puts under a limit, about that share at most is expected to be false. They suggest, they do not decide.`,
+      source: "Benjamini and Hochberg 1995, Journal of the Royal Statistical Society B 57, 289-300",
     },
     {
       when: effects.some((effect) => effect.role === "guardrail"),
       name: "What must not get worse",
       how: "Held when the interval\u2019s harmful end stays within the limit that the plan set beforehand: non-inferiority.",
       source: "ICH E9 and E10; CONSORT extension to non-inferiority trials, Piaggio and others 2012",
+    },
+    {
+      when: effects.some(({ power }) => power.detectable !== null),
+      name: "Power and sizes",
+      how: "From the standard error seen here, the critical value that decides and the amounts that the plan states; never from the effect seen here. The standard error falls with the root of the size, the groups shared out as here. For all questions together the chance is at least 1 minus the sum of the single chances to miss.",
+      source:
+        "Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 3.2; what is overstated: Gelman and Carlin 2014, Perspectives on Psychological Science 9, 641-651",
     },
     {
       when: true,
@@ -137,6 +172,10 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
     },
   ];
   return all.filter(({ when }) => when).map(({ name, how, source }) => ({ name, how, source }));
+}
+
+function hasNoSpread({ control, variant }: Effect["contrast"]): boolean {
+  return control.sd === null || variant.sd === null;
 }
 
 /** METHODS 9. */
