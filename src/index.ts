@@ -8,6 +8,7 @@ import {
   adjustedPairs,
   effects as allEffects,
   conclusion as concluded,
+  otherChoices,
   type Pair,
   withOrderStatistics,
 } from "./decision/index.ts";
@@ -118,6 +119,7 @@ function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }
   const checks = soundnessChecks(plan, reduction);
   const effects = allEffects(plan, arms, reduction, pairs);
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
+  const choices = otherChoices(plan, reduction, arms, pairs, effects);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
-  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, conclusion });
+  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, choices, conclusion });
 }

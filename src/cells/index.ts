@@ -1,10 +1,13 @@
 // Roll-ups
 export { arms, partSums } from "./arms.ts";
 
+// Other choices
+export { armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "./choice-arms.ts";
 // Exact quotients
 export { exactly, type Fraction, fraction, nearestNumber } from "./fraction.ts";
 // Adjusted contrasts
 export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
+export { sumsOfSquares } from "./pair-ratio.ts";
 export { NANO, nanoOf } from "./sums.ts";
 
 // Types

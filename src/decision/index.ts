@@ -6,6 +6,8 @@ export { because } from "./absent.ts";
 export { adjustedSentence, covariateInWords } from "./adjusted-words.ts";
 // what was found, in sentences that page, terminal and summary share
 export { askedSentence } from "./asked.ts";
+// the same contrasts under other reasonable choices
+export type { ChoiceName, ChoiceRow } from "./choice-rows.ts";
 export { conclusion } from "./conclusion.ts";
 // what adjusted contrasts need of the units
 export { type AdjustedCells, adjustedPairs, type Pair } from "./covariates.ts";
@@ -19,6 +21,7 @@ export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
 export { enrolledADay, type NextTest, nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
+export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";

@@ -152,6 +152,16 @@ export function termsOf(x: bigint, pivot: bigint, scale: number): [bigint, bigin
   return [exactly(u), exactly(u * u), exactly(u * u * u), exactly(u * u * u * u)];
 }
 
+/** The terms of one pair (y, x): S_10, S_01, S_20, S_11, S_02 of it alone, as the engine computes them. */
+export function pairTerms(
+  [y, x]: readonly [bigint, bigint],
+  pivots: readonly [bigint, bigint],
+  scales: readonly [number, number],
+): [bigint, bigint, bigint, bigint, bigint] {
+  const [u, w] = [nanoNumber(y - pivots[0]) / scales[0], nanoNumber(x - pivots[1]) / scales[1]];
+  return [exactly(u), exactly(w), exactly(u * u), exactly(u * w), exactly(w * w)];
+}
+
 /** n units that all have one value. */
 export function alike(variant: number, n: number, x: bigint, pivot: bigint, scale: number): Group {
   return {

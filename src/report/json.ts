@@ -1,11 +1,11 @@
 import type { Check } from "../checks/types.ts";
-import type { Effect } from "../decision/index.ts";
+import type { Choices, Effect } from "../decision/index.ts";
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import type { Contrast } from "../stats/types.ts";
 import { twelveDigits } from "./digits.ts";
 import { rowLine, unitLine } from "./ledger.ts";
-import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson } from "./types.ts";
+import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
 export function reportJson(inputs: ReportInputs): ReportJson {
@@ -24,7 +24,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     effects: inputs.effects.map(effectJson),
     subgroups: [],
     accrual: [],
-    sensitivity: [],
+    sensitivity: inputs.choices.map(sensitivityJson),
     changes: null,
     provenance: {
       version: inputs.version,
@@ -116,4 +116,20 @@ function differenceJson({ difference }: Contrast, pAdjusted: number | null): Eff
 
 function relativeJson({ relative }: Contrast): EffectJson["relative"] {
   return "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high };
+}
+
+function sensitivityJson({ metric, variant, rows }: Choices): SensitivityJson {
+  return {
+    metric,
+    variant,
+    rows: rows.map(({ choice, difference: { estimate, low, high, p }, sign, agrees }) => ({
+      choice,
+      estimate,
+      low,
+      high,
+      sign,
+      p,
+      agrees,
+    })),
+  };
 }

@@ -96,7 +96,42 @@ export const reportSchema = z.strictObject({
   effects: z.array(effect),
   subgroups: z.array(z.never()),
   accrual: z.array(z.never()),
-  sensitivity: z.array(z.never()),
+  sensitivity: z
+    .array(
+      z.strictObject({
+        metric: z.string(),
+        variant: z.string(),
+        rows: z.array(
+          z.strictObject({
+            choice: z.enum([
+              "as-planned",
+              "unadjusted",
+              "no-cap",
+              "cap-0.99",
+              "cap-0.999",
+              "without-largest",
+              "other-way-in-two-variants",
+              "any-follow-up",
+              "without-first-day",
+              "normal",
+              "welch",
+              "score",
+              "skew-corrected",
+              "bootstrap-t",
+              "randomisation",
+              "log",
+            ]),
+            estimate: numberOrNull,
+            low: numberOrNull,
+            high: numberOrNull,
+            sign: z.union([z.literal(-1), z.literal(0), z.literal(1)]).nullable(),
+            p: numberOrNull,
+            agrees: z.boolean(),
+          }),
+        ),
+      }),
+    )
+    .describe("Each contrast under other reasonable choices. agrees: it stands where the plan's own choice puts it."),
   changes: z.null(),
   provenance: z.strictObject({
     version: z.string(),

@@ -52,6 +52,28 @@ function compared(control: Arm, variant: Arm, critical: number): Compared {
   return byNormal(c, t, isShare ? { control: ofControl, variant: ofVariant } : null, critical);
 }
 
+/**
+ * The same contrast by a method of the reader's choice, whatever the arms' sizes: what other reasonable methods would say.
+ * @returns null where the method is not one for these arms: score is for proportions, Welch's t for all others, and a
+ *   quantile has none but its own
+ */
+export function contrastBy(
+  method: Exclude<Method, "quantile">,
+  control: Arm,
+  variant: Arm,
+  critical: number,
+): Pick<Contrast, "difference" | "relative" | "why"> | null {
+  if (control.kind === "quantile" || variant.kind === "quantile") return null;
+  const [c, t] = [level(control), level(variant)];
+  const [ofControl, ofVariant] = [countsOf(control), countsOf(variant)];
+  const isShare = (ofControl !== null && ofVariant !== null) || isAdjustedShare(control);
+  if (isShare ? method === "welch" : method === "score") return null;
+  if (isAbsent(c) || isAbsent(t)) return null;
+  if (method === "welch") return byWelch(c, t, critical);
+  if (method === "normal") return byNormal(c, t, null, critical);
+  return ofControl === null || ofVariant === null ? null : byScore(c, t, ofControl, ofVariant, critical);
+}
+
 function byNormal(
   c: Level,
   t: Level,

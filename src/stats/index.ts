@@ -4,13 +4,14 @@
 export { isAbsent } from "./absent.ts";
 export { type AdjustedArm, adjustedArms, meanFromPivot } from "./adjusted-arm.ts";
 export { armFigures } from "./arm-figures.ts";
+export { armOfLevel } from "./arm-of-level.ts";
 // Covariates
 export { type Balance, balance } from "./balance.ts";
 // More than one question
 export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
-export { contrast } from "./contrast.ts";
+export { contrast, contrastBy } from "./contrast.ts";
 export { type Adjusted, adjusted } from "./covariate.ts";
 export { dunnettCritical, dunnettP } from "./dunnett.ts";
 

@@ -1,4 +1,4 @@
-import type { ByVariant, CellTable, Reduction } from "../../src/engine/types.ts";
+import type { ByVariant, CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { ascending, nanoOf, nanoText } from "./number.ts";
 import type { OracleQuantile } from "./quantile.ts";
@@ -28,6 +28,8 @@ export interface MetricOutcome {
   /** One an arm, in plan order. */
   readonly of: readonly ArmOutcome[];
   readonly per: readonly ArmOutcome[] | null;
+  /** The covariate over the units that have one and a value, and the metric's values of these units. */
+  readonly covariate: readonly CovariateOutcome[] | null;
   /** The same by variant and bucket, "0/517". */
   readonly buckets: Readonly<Record<string, ArmOutcome>>;
 }
@@ -37,6 +39,13 @@ export interface QuantileOutcome {
   readonly at: string;
   readonly low: string | null;
   readonly high: string | null;
+}
+
+export interface CovariateOutcome {
+  readonly x: ArmOutcome;
+  readonly n: number;
+  readonly totalY: string;
+  readonly totalX: string;
 }
 
 /** Decimals as text, exact; null where there is no value. */
@@ -66,6 +75,7 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
         quantile: metric.quantile?.map(quantileOf) ?? null,
         of: armsOf(plan, metric.values),
         per: isRatio ? armsOf(plan, per) : null,
+        covariate: isAdjusted(plan, metric.metric) ? covariatesOf(plan, metric.values) : null,
         buckets: Object.fromEntries(
           [...new Set(metric.values.map(bucketKey))].map((key) => [
             key,
@@ -100,10 +110,34 @@ export function outcomeOfEngine(
         quantile: quantiles[m]?.map(quantileOf) ?? null,
         of: mergedArms(plan, cells),
         per: metric.ratio === null ? null : mergedArms(plan, cellsOf(metric.ratio.per)),
+        covariate: metric.covariate === null ? null : covariateCells(plan, metric.covariate),
         buckets: Object.fromEntries(cells.map((cell) => [bucketKey(cell), merged([cell])])),
       };
     }),
   };
+}
+
+const isAdjusted = (plan: Plan, metric: string) =>
+  plan.metrics.some(({ name, adjustFor }) => name === metric && adjustFor !== null);
+
+function covariatesOf(plan: Plan, values: readonly UnitValue[]): CovariateOutcome[] {
+  return plan.variants.map((_, at) => {
+    const own = values.filter(({ variant, x }) => variant === at && x !== null);
+    const xs = own.map((value) => ({ ...value, of: value.x ?? 0n }));
+    const total = (of: readonly UnitValue[]) => nanoText(of.reduce((sum, value) => sum + value.of, 0n));
+    return { x: armOf(xs), n: own.length, totalY: total(own), totalX: total(xs) };
+  });
+}
+
+function covariateCells(plan: Plan, { x, joint }: NonNullable<MetricCells["covariate"]>): CovariateOutcome[] {
+  const sum = (at: number, column: readonly bigint[]) =>
+    nanoText(column.reduce((total, value, row) => (joint.variant[row] === at ? total + value : total), 0n));
+  return mergedArms(plan, cellsOf(x)).map((arm, at) => ({
+    x: arm,
+    n: joint.n.reduce((total, n, row) => (joint.variant[row] === at ? total + n : total), 0),
+    totalY: sum(at, joint.totalY),
+    totalX: sum(at, joint.totalX),
+  }));
 }
 
 function ledgerOf(

@@ -107,9 +107,16 @@ function metricOf(node: Node): Metric {
         : limit !== null
           ? { kind: "at", at: decimal(limit) }
           : null,
-    adjustFor: null,
+    adjustFor: covariateOf(at(node, "adjust-for")),
     withoutRows: textAt(node, "without-rows") === "leave-out" ? "leave-out" : "zero",
   };
+}
+
+function covariateOf(node: Node | null): Metric["adjustFor"] {
+  const column = textAt(node, "column");
+  if (column !== null) return { kind: "column", column };
+  const days = numberAt(node, "days-before");
+  return days === null ? null : { kind: "days-before", days };
 }
 
 const WITH_COLUMN = ["sum", "max", "min", "first", "last"] as const;

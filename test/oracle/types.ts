@@ -58,6 +58,8 @@ export interface UnitValue {
   readonly of: bigint;
   /** A ratio's denominator. */
   readonly per: bigint | null;
+  /** The covariate; null where the plan adjusts for none, or the unit has no value of it. */
+  readonly x: bigint | null;
 }
 
 export interface OracleMetric {

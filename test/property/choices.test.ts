@@ -101,7 +101,7 @@ function expectedOf(
   others: readonly (readonly [OracleChoice, readonly OracleMetric[] | null])[],
 ): Expected {
   const values = (found: OracleMetric | undefined): Value[] =>
-    (found?.values ?? []).map(({ variant, of, per }) => ({ variant, y: of, x: per }));
+    (found?.values ?? []).map(({ variant, of, per, x }) => ({ variant, y: of, x: per ?? x }));
   const mine = values(own[m]);
   return {
     own: mine,
@@ -112,7 +112,7 @@ function expectedOf(
         metrics === null ? null : values(metrics[m]),
       ]),
     ),
-    isPaired: metric?.per != null,
+    isPaired: metric?.per != null || metric?.adjustFor != null,
     isLogged: metric?.summary === "mean" && mine.length > 0 && mine.every(({ y }) => y >= 0n),
     held: [own, ...others.map(([, metrics]) => metrics)].flatMap((metrics) => metrics?.[m]?.cap?.value ?? []),
   };

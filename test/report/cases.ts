@@ -48,6 +48,7 @@ function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly fl
     version: "0.1.0",
     reduction,
     checks: [allocationPassed, ...otherChecks.slice(0, 2), duplicatesCaution, ...otherChecks.slice(2)],
+    choices: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
     effects: withFamilies(plan, effects).map((effect) => withPower(effect, plan, units)),

@@ -15,8 +15,10 @@ export function withQuantiles(dice: Dice, plan: RandomPlan, shape: Shape): { pla
   const many = dice.chance(0.15);
   const changed = (metrics as readonly { readonly [key: string]: Piece }[]).map((metric) => {
     const { cap, ...rest } = metric;
-    const isChanged = metric.summary === "mean" && (many ? dice.chance(0.9) : cap === undefined && dice.chance(0.3));
-    return isChanged ? { ...rest, summary: "quantile", quantile: digits(dice.pick(SHARES)) } : metric;
+    const isChanged = many ? dice.chance(0.9) : cap === undefined && dice.chance(0.3);
+    return isChanged && metric.summary === "mean" && !("adjust-for" in metric)
+      ? { ...rest, summary: "quantile", quantile: digits(dice.pick(SHARES)) }
+      : metric;
   });
   const more = Array.from({ length: 60 }, (_, i) => `unit ${i}`);
   return {
