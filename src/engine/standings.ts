@@ -33,7 +33,7 @@ export async function unitChoices(
 ): Promise<ChoiceCells[][]> {
   const counts = await engine.query(standingCounts());
   const choices = UNIT_CHOICES.filter((choice) => differs(choice, counts) && leavesArms(plan, choice, counts));
-  if (choices.length === 0) return metrics.map(() => []);
+  if (choices.length === 0 || metrics.length === 0) return metrics.map(() => []);
   const isBeyond = counts.some((row) => !isAnalysed(count(row, "standing")));
   const scales = await scalesWithOthers(metrics, isBeyond, engine);
   const apart = await tablesApart(metrics, scales, engine, dialect);

@@ -3,6 +3,7 @@ import { type ColumnTable, desc, from, op, escape as rowwise } from "arquero";
 import type { Aggregate, Metric, Part, Plan } from "../../src/plan/types.ts";
 import { rowAt } from "./ledger.ts";
 import { ascending, nanoOf, readDecimal } from "./number.ts";
+import { orderedArm, zFor } from "./quantile.ts";
 import { DAY_US, partMatches } from "./span.ts";
 import type { Clock } from "./time.ts";
 import type { OracleMetric, Row, UnitValue } from "./types.ts";
@@ -46,6 +47,7 @@ export function metricOf(
     return [unitValue(unit, value, per === null ? null : takenValue(metric, per.get(unit.unit)), covariate(unit))];
   });
   const cap = capOf(metric, before);
+  const { quantile: q } = metric;
   return {
     metric: metric.name,
     leftOut: byVariant(plan, (variant) => ofVariant(analysed, variant).length - ofVariant(before, variant).length),
@@ -59,6 +61,10 @@ export function metricOf(
             units: byVariant(plan, (variant) => ofVariant(before, variant).filter(({ of }) => of > cap).length),
           },
     values: before.map((value) => (cap !== null && value.of > cap ? { ...value, of: cap } : value)),
+    quantile:
+      q === null
+        ? null
+        : plan.variants.map((_, at) => orderedArm(armValues(before, at), q, zFor(intervalsAtOnce(plan, metric)))),
   };
 }
 
@@ -198,6 +204,13 @@ export function quantile(values: readonly bigint[], q: string): bigint {
   if (found === undefined) throw new Error(`no ${place}-th smallest of ${values.length} values`);
   return found;
 }
+
+/** What decides is held for all variants at once, a secondary metric by itself. */
+export const intervalsAtOnce = (plan: Plan, { role }: Metric): number =>
+  role === "secondary" ? 1 : plan.variants.length - 1;
+
+export const armValues = (values: readonly UnitValue[], variant: number): bigint[] =>
+  ofVariant(values, variant).map(({ of }) => of);
 
 export const byVariant = (plan: Plan, count: (variant: number) => number): number[] =>
   plan.variants.map((_, at) => count(at));

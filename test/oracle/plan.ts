@@ -87,6 +87,7 @@ function metricOf(node: Node): Metric {
   const cap = at(node, "cap");
   const quantile = textAt(cap, "quantile");
   const limit = textAt(cap, "at");
+  const share = textAt(node, "quantile");
   const per = at(node, "per");
   return {
     name: textAt(node, "name") ?? "",
@@ -94,7 +95,7 @@ function metricOf(node: Node): Metric {
     summary: textAt(node, "summary") as Metric["summary"],
     of: partOf(at(node, "of")),
     per: per === null ? null : partOf(per),
-    quantile: null,
+    quantile: share === null ? null : decimal(share),
     unitOfMeasure: textAt(node, "in"),
     goodIs: textAt(node, "good-is") === "lower" ? "lower" : "higher",
     worthwhile: amountOf(at(node, "worthwhile")),

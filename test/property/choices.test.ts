@@ -49,7 +49,7 @@ describe("the cells under other reasonable choices", () => {
         const [files, lists] = [rawFiles(drawn), rawLists(drawn)];
         const own = trace(plan, files, lists).result.metrics;
         const others = CHOICES.map((choice) => [choice, underChoice(choice, plan, files, lists)] as const);
-        const { metrics } = await runEngine(path);
+        const { metrics } = (await runEngine(path)).reduction;
         meet(metrics, "log");
         return metrics.flatMap((cells, m) =>
           wrongChoices(cells, expectedOf(plan.metrics[m], m, own, others)).map(
@@ -105,7 +105,13 @@ function expectedOf(
   const mine = values(own[m]);
   return {
     own: mine,
-    others: new Map(others.map(([choice, metrics]) => [choice, metrics === null ? null : values(metrics[m])])),
+    // A quantile has no other choices.
+    others: new Map(
+      (metric?.summary === "quantile" ? [] : others).map(([choice, metrics]) => [
+        choice,
+        metrics === null ? null : values(metrics[m]),
+      ]),
+    ),
     isPaired: metric?.per != null || metric?.adjustFor != null,
     isLogged: metric?.summary === "mean" && mine.length > 0 && mine.every(({ y }) => y >= 0n),
     held: [own, ...others.map(([, metrics]) => metrics)].flatMap((metrics) => metrics?.[m]?.cap?.value ?? []),

@@ -42,6 +42,7 @@ function wrong(change: Partial<CellTable>): string[] {
       per: null,
       x: null,
     })),
+    quantile: null,
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);

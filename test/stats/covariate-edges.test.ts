@@ -142,7 +142,8 @@ describe("the balance of a covariate", () => {
   });
 
   it("has no standardised difference without spread, and half of it with one arm's", () => {
-    const of = (c: Pairs, t: Pairs) => balance(...(covariateArms(c, t).map((arm) => arm.covariate) as [never, never]), 0.05);
+    const of = (c: Pairs, t: Pairs) =>
+      balance(...(covariateArms(c, t).map((arm) => arm.covariate) as [never, never]), 0.05);
     expect(
       of(
         [

@@ -15,12 +15,6 @@ export interface Later {
 
 /** One line a feature; it goes when the feature comes. */
 export const LATER: readonly Later[] = [
-  {
-    of: "metric",
-    path: ["summary"],
-    value: "quantile",
-    remedy: "Take mean, proportion or ratio-of-totals, or remove the metric.",
-  },
   { of: "plan", path: ["decision", "interval"], value: "skew-corrected", remedy: "Write normal, or remove the key." },
   { of: "plan", path: ["forecast"], remedy: "Remove it." },
 ];
