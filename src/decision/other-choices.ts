@@ -24,7 +24,8 @@ export interface Choices {
  * @param pairs the adjusted arms of metrics that the plan adjusts
  * @returns one an effect, in their order
  *
- * Source: Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), 5.1 to 5.2.
+ * Source: Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity
+ * analysis.
  */
 export function otherChoices(
   plan: Plan,
