@@ -1,4 +1,5 @@
 import type { ReportInputs } from "../../src/report/types.ts";
+import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { hostile } from "./hostile.ts";
 
@@ -10,5 +11,6 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["undecidable", undecidable],
   ["several variants", several],
   ["as little as there can be", little],
+  ["adjusted", adjustedCase],
   ["hostile", hostile],
 ];
