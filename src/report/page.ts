@@ -1,5 +1,6 @@
 import { controlOf, whenText } from "./plan-words.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
+import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
@@ -21,9 +22,14 @@ export interface Page {
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
-  readonly metrics: readonly MetricSection[];
+  readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly power: PowerSection;
   readonly methods: MethodsSection;
+}
+
+/** What stands below a metric's tables. */
+export interface FurtherOnMetric {
+  readonly choices: readonly ChoicesFigure[];
 }
 
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
@@ -38,6 +44,7 @@ const CONTENTS = [
 
 export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
+  const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
     experiment: plan.experiment,
@@ -51,7 +58,10 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
-    metrics: metricSections(plan, reduction, effects),
+    metrics: metricSections(plan, reduction, effects).map((metric) => ({
+      ...metric,
+      choices: figures.get(metric.name) ?? [],
+    })),
     power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),
   };
