@@ -1,4 +1,4 @@
-import { anyIsEnough, type Effect } from "../../decision/index.ts";
+import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
 import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";
@@ -27,9 +27,10 @@ export function methodsSection({
   version,
   reduction,
   effects,
+  choices,
 }: ReportInputs): MethodsSection {
   return {
-    methods: methods(plan, effects),
+    methods: methods(plan, effects, choices),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
     facts: facts(plan, planSha256, version, reduction),
@@ -65,11 +66,7 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
 }
 
 /** Only what this report uses. */
-function methods(
-  plan: Plan,
-  effects: readonly Effect[],
-  choices: readonly Choices[],
-): MethodsSection["methods"] {
+function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choices[]): MethodsSection["methods"] {
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -172,7 +169,8 @@ function methods(
       when: choices.some(({ rows }) => rows.length > 1),
       name: "Other reasonable choices",
       how: `The same difference with one choice changed and all else as planned: other caps, other ${many}, without the most extreme ${plan.unitCalled.one} of each group, unadjusted, by other methods; of the logarithm of 1 + the value only the side and p. All are taken from one pass over the log. They share the data, so how many agree says how fragile the result is and adds no evidence.`,
-      source: "Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity analysis",
+      source:
+        "Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity analysis",
     },
     {
       when: effects.some(({ role, zone }) => role !== "secondary" && zone !== "not-settled"),
