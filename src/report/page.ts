@@ -6,6 +6,7 @@ import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
@@ -30,6 +31,7 @@ export interface Page {
 /** What stands below a metric's tables. */
 export interface FurtherOnMetric {
   readonly choices: readonly ChoicesFigure[];
+  readonly turning: readonly TurningTable[];
 }
 
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
@@ -61,6 +63,8 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
       choices: figures.get(metric.name) ?? [],
+      // What an effect amounts to is not for data that must be mended first.
+      turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
     power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),

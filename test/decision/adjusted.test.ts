@@ -82,6 +82,21 @@ describe("the rule on an adjusted contrast", () => {
     }
   });
 
+  // A year, an account's number: what counts of x is how it differs, not how far it lies from 0.
+  it("loses no digit where x is large and hardly varies", async () => {
+    const [example] = adjustedContrasts();
+    if (example === undefined) throw new Error("no example of R's");
+    const units = example.y.map((y, i) => ({
+      arm: example.variant[i] === 1 ? "calendar" : "list",
+      y,
+      x: 1e15 + (example.x[i] ?? 0),
+    }));
+    const { difference, theta } = effectOf(await reportOf(units.sort((a, b) => (a.arm < b.arm ? 1 : -1)))).adjusted;
+    expectWithin(theta, example.theta, 6e-12);
+    expectWithin(difference.estimate, example.estimate, 6e-12);
+    expectWithin(difference.standardError, example.standardError, 6e-12);
+  });
+
   // By hand: x 0..9, y = 3 x + e with e -1, 0, 1, ten times each, 300 units an arm: x and e are not correlated, so theta is 3
   // and the adjusted variance (2/3) 300/299; the differences are those added. Two variants with equal variances:
   // Dunnett's critical value 2.212128 (R 4.2.2, mvtnorm 1.1-3; Dunnett 1964, table II.b: 2.21).

@@ -39,7 +39,7 @@ function savedText(plan: Plan, { varianceReduction }: AdjustedContrast): string 
 }
 
 function balanceText({ control, variant }: Effect, { balance }: AdjustedContrast): string {
-  const { p } = balance.difference;
+  const { p } = balance;
   const means = [balance.variant.mean, balance.control.mean].filter((mean) => mean !== null);
   if (means.length < 2) return "";
   const [ofVariant, ofControl] = alike(means);
