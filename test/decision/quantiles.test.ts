@@ -99,7 +99,9 @@ describe("the effect on a quantile", () => {
     );
     // n 20, q 0.9: rank 16 exists and 21 does not.
     const upper = planFor(["list", "calendar"], [{ ...PAGE_TIME, quantile: "0.9" }]);
-    expect(await said(upper, [range(200, 101), range(20, 301)])).toContain("13.6% higher (95% interval: at least 9.9% higher).");
+    expect(await said(upper, [range(200, 101), range(20, 301)])).toContain(
+      "13.6% higher (95% interval: at least 9.9% higher).",
+    );
   });
 
   it("has no zone but not settled without a width, however far apart the arms are", async () => {
