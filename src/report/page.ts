@@ -5,6 +5,7 @@ import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import type { ReportInputs } from "./types.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
@@ -21,9 +22,14 @@ export interface Page {
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
-  readonly metrics: readonly MetricSection[];
+  readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly power: PowerSection;
   readonly methods: MethodsSection;
+}
+
+/** What stands below a metric's tables. */
+export interface FurtherOnMetric {
+  readonly sampling: readonly SamplingPart[];
 }
 
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
@@ -38,6 +44,8 @@ const CONTENTS = [
 
 export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
+  const isDecided = conclusion.decision !== "undecidable";
+  const sampling = await samplingParts(plan, effects, reduction, isDecided);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
     experiment: plan.experiment,
@@ -51,7 +59,10 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
-    metrics: metricSections(plan, reduction, effects),
+    metrics: metricSections(plan, reduction, effects).map((metric) => ({
+      ...metric,
+      sampling: sampling.get(metric.name) ?? [],
+    })),
     power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),
   };
