@@ -112,8 +112,8 @@ function judge(plan: Plan, { about, fromColumn }: Covariate, tests: readonly Jud
       comparisons: of,
       variants: tests.map(({ variant, means: [control, treated], p, pAdjusted }) => ({
         variant: plan.variants[variant]?.name ?? "",
-        control,
-        treated,
+        meanOfControl: control,
+        meanOfVariant: treated,
         p: p ?? 1,
         pAdjusted,
       })),

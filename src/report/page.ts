@@ -1,5 +1,6 @@
 import { controlOf, whenText } from "./plan-words.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
+import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
@@ -30,6 +31,7 @@ export interface Page {
 /** What stands below a metric's tables. */
 export interface FurtherOnMetric {
   readonly sampling: readonly SamplingPart[];
+  readonly choices: readonly ChoicesFigure[];
 }
 
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
@@ -46,6 +48,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
+  const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
     experiment: plan.experiment,
@@ -62,6 +65,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
       sampling: sampling.get(metric.name) ?? [],
+      choices: figures.get(metric.name) ?? [],
     })),
     power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),

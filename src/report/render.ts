@@ -9,6 +9,7 @@ const FOLDER = new URL("../../templates/", import.meta.url);
 const PARTIALS = [
   "decision",
   "forest",
+  "choices",
   "contents",
   "checks",
   "counted",

@@ -1,6 +1,6 @@
 import { type AdjustedContrast, adjustedSentence, covariateInWords, type Effect } from "../../decision/index.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
-import { alike, capital, count, number, percent, plural, pText, quoted } from "../../words/index.ts";
+import { alike, count, number, percent, plural, pText, quoted } from "../../words/index.ts";
 
 /** The same effect without its adjustment, to be shown beside it; null where it has none. */
 export function unadjusted(effect: Effect): Effect | null {
@@ -13,7 +13,7 @@ export function adjustedNotes(metric: Metric, plan: Plan, effects: readonly Effe
   const covariate = covariateInWords(metric);
   if (covariate === null) return [];
   const texts = effects.map((effect) => {
-    const who = plan.variants.length > 2 ? `${capital(effect.variant)}: ` : "";
+    const who = plan.variants.length > 2 ? `With ${quoted(effect.variant)}. ` : "";
     if (effect.adjusted === null) return who + adjustedSentence(effect, plan);
     const { adjusted } = effect;
     return `${who}${slopeText(plan, covariate, adjusted)} ${savedText(plan, adjusted)} ${balanceText(effect, adjusted)}${missingText(plan, effect, adjusted)}`;
@@ -30,7 +30,10 @@ function slopeText(plan: Plan, covariate: string, { theta, centre }: AdjustedCon
 function savedText(plan: Plan, { varianceReduction }: AdjustedContrast): string {
   const { many } = plan.unitCalled;
   if (varianceReduction < 0.001) return "That takes away next to none of the variance of the difference.";
-  const times = varianceReduction < 1 ? `, as ${number(1 / (1 - varianceReduction))} times as many ${many} would` : "";
+  const times =
+    varianceReduction < 1
+      ? `, as about ${number(Number((1 / (1 - varianceReduction)).toPrecision(2)))} times as many ${many} would`
+      : "";
   return `That takes away ${percent(varianceReduction)} of the variance of the difference${times}.`;
 }
 
