@@ -3,6 +3,7 @@ import type { MetricCells, Reduction } from "../engine/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
 import { contrastBy, isAbsent, normalUpperTail } from "../stats/index.ts";
 import { adjustedTwoArms, contrastsAsPlanned, criticalOfTwoArms, type TwoArms } from "./choice-contrasts.ts";
+import { byShapesAndDraws } from "./choice-draws.ts";
 import { type ChoiceRow, onlyP, planRow, row } from "./choice-rows.ts";
 import { type Pair, pairOf } from "./covariates.ts";
 import { deciding } from "./deciding.ts";
@@ -104,10 +105,11 @@ function byOtherMethods(
     const two = all[i];
     if (two === undefined || isAbsent(two)) return [];
     const taken = deciding(effect).difference.method;
-    return (["normal", "welch", "score"] as const).flatMap((method) => {
+    const simple = (["normal", "welch", "score"] as const).flatMap((method) => {
       const found = method === taken ? null : contrastBy(method, two.control, two.variant, critical);
       return found === null || found.difference.low === null ? [] : [row(method, found, effect, metric)];
     });
+    return [...simple, ...byShapesAndDraws(effect, metric, two)];
   });
 }
 
