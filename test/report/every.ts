@@ -1,5 +1,6 @@
 import type { ReportInputs } from "../../src/report/types.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
+import { farFromNormal } from "./drawn.ts";
 import { hostile } from "./hostile.ts";
 
 /** Every hand-made report, by name. */
@@ -10,5 +11,6 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["undecidable", undecidable],
   ["several variants", several],
   ["as little as there can be", little],
+  ["far from normal", farFromNormal],
   ["hostile", hostile],
 ];
