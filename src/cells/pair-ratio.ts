@@ -18,7 +18,7 @@ export function ratioOfPairs(numerator: PowerSums, joint: JointSums): Arm {
   if (numerator.n !== joint.n) throw new Error(`${joint.n} pairs for ${numerator.n} numerators`);
   const denominator = secondOf(joint);
   if (joint.n === 0 || totalOfB === 0n) return { kind: "ratio", numerator, denominator, score: null };
-  return { kind: "ratio", numerator, denominator, score: sumsOfSquares(joint.n, squaresOfScore(joint)) };
+  return { kind: "ratio", numerator, denominator, score: sumsOfSquares(joint.n, squaresOfScore(joint)), joint };
 }
 
 /** x alone; its ends are as far as its scale reaches, for a pair does not tell them. */

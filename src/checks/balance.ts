@@ -14,7 +14,7 @@ import { byChance } from "./words.ts";
  * Were the groups alike before the test? Each covariate that the plan adjusts for, a metric's own past among them, is
  * compared between every variant and the control, with Holm's p over all of these comparisons. One part a covariate.
  *
- * Means by z, or Welch's t with under 200 units in an arm; shares by chi-square or Fisher's exact test.
+ * Means by z, or Welch's t with under 200 units in an arm, corrected for skewness where that matters; shares by chi-square or Fisher's exact test.
  */
 export function balance(plan: Plan, reduction: Reduction): Check | null {
   const all = covariates(plan, reduction).map((covariate) => ({ covariate, found: comparisons(plan, covariate) }));
@@ -85,7 +85,7 @@ function comparisons(plan: Plan, { arms, isShare }: Covariate): Comparison[] {
     const means = [found.control.mean, found.variant.mean] as const;
     if (means[0] === null || means[1] === null) return [];
     const having = [control, covariate].map(({ total }) => Number((total ?? 0n) / NANO));
-    const p = isShare ? armsAlike(having, [control.n, covariate.n]) : found.difference.p;
+    const p = isShare ? armsAlike(having, [control.n, covariate.n]) : found.p;
     return [{ variant, control: c, means: [means[0], means[1]] as const, p }];
   });
 }

@@ -1,7 +1,8 @@
 import type { Arm, CovariateArm } from "../cells/index.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { adjusted, armOfLevel, contrast, isAbsent } from "../stats/index.ts";
+import { adjusted, armFigures, armOfLevel, contrast, isAbsent, shapedAs } from "../stats/index.ts";
 import type { Absent, Contrast } from "../stats/types.ts";
+import { type Compared, comparedContrast } from "./compared.ts";
 import { criticalOf, variancesOfPairs } from "./critical.ts";
 
 /** The two arms of a contrast, or why there are none to compare. */
@@ -28,8 +29,28 @@ export function criticalOfTwoArms(plan: Plan, metric: Metric, all: readonly TwoA
   return criticalOf(plan, metric, { control, variants: [...variants, ...all.slice(found.length).map(() => 0)] });
 }
 
-/** The contrasts of one metric by the plan's own rule of methods; null where there is nothing to compare. */
-export function contrastsAsPlanned(plan: Plan, metric: Metric, all: readonly TwoArms[]): (Contrast | null)[] {
+/**
+ * The contrasts of one metric by the plan's own rule of methods; null where there is nothing to compare. What a correction
+ * for skewness needs and a choice's sums do not tell, the shape of scores and of adjusted values and how far the arms look
+ * alike, is the plan's own.
+ * @param own the arms that the plan compares, in the same order; null where a quantity has no counterpart in them
+ */
+export function contrastsAsPlanned(
+  plan: Plan,
+  metric: Metric,
+  all: readonly TwoArms[],
+  own: readonly Compared[] | null,
+): (Contrast | null)[] {
   const critical = criticalOfTwoArms(plan, metric, all);
-  return all.map((two) => (isAbsent(two) ? null : contrast(two.control, two.variant, critical)));
+  return all.map((two, i) => {
+    if (isAbsent(two)) return null;
+    const planned = own?.[i] ?? null;
+    if (planned === null) return contrast(two.control, two.variant, critical);
+    const compared = {
+      control: shapedAs(two.control, armFigures(planned.control)),
+      variant: shapedAs(two.variant, armFigures(planned.variant)),
+      buckets: planned.buckets,
+    };
+    return comparedContrast(plan, compared, critical);
+  });
 }

@@ -28,6 +28,8 @@ export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
+// what would change the conclusion
+export { type Turn, whatWouldChange } from "./turning.ts";
 // types
 export type { AdjustedContrast, Conclusion, ContrastNormality, DecisionWord, Effect, Power, Zone } from "./types.ts";
 export { absoluteSentence, effectSentence, guardrailSentence } from "./words.ts";

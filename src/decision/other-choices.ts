@@ -1,10 +1,11 @@
 import { type Arm, armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "../cells/index.ts";
 import type { MetricCells, Reduction } from "../engine/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrastBy, isAbsent, normalUpperTail } from "../stats/index.ts";
+import { contrastBy, isAbsent, isNotDrawn, normalUpperTail, relativeByEnds } from "../stats/index.ts";
+import { bucketsOf } from "./buckets.ts";
 import { adjustedTwoArms, contrastsAsPlanned, criticalOfTwoArms, type TwoArms } from "./choice-contrasts.ts";
-import { byShapesAndDraws } from "./choice-draws.ts";
 import { type ChoiceRow, onlyP, planRow, row } from "./choice-rows.ts";
+import { type Compared, comparedPair } from "./compared.ts";
 import { type Pair, pairOf } from "./covariates.ts";
 import { deciding } from "./deciding.ts";
 import { arm, controlOf } from "./effects.ts";
@@ -25,7 +26,8 @@ export interface Choices {
  * @param pairs the adjusted arms of metrics that the plan adjusts
  * @returns one an effect, in their order
  *
- * Source: Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), 5.1 to 5.2.
+ * Source: Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity
+ * analysis.
  */
 export function otherChoices(
   plan: Plan,
@@ -38,10 +40,11 @@ export function otherChoices(
     const cells = metrics[m];
     if (cells === undefined) throw new Error(`no cells for metric ${metric.name}`);
     const own = effects.filter((effect) => effect.metric === metric.name);
+    const planned = plannedArms(plan, metric, m, cells, arms, pairs, own);
     const lists = [
       own.map((effect) => [planRow(effect), ...unadjusted(effect, metric)]),
-      ...otherCells(plan, metric, cells, own),
-      byOtherMethods(plan, metric, m, arms, pairs, own),
+      ...otherCells(plan, metric, cells, own, planned),
+      byOtherMethods(plan, metric, own, planned),
       logged(plan, metric, cells, own),
     ];
     return own.map((effect, i) => ({
@@ -55,12 +58,38 @@ export function otherChoices(
 /** Rows of one choice or several, one list an effect of the metric. */
 type Rows = readonly (readonly ChoiceRow[])[];
 
+/** The arms that the plan compares, one pair an effect; by bucket only where the plan's interval asks for that. */
+function plannedArms(
+  plan: Plan,
+  metric: Metric,
+  m: number,
+  cells: MetricCells,
+  arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
+  own: readonly Effect[],
+): Compared[] {
+  const isCorrected = plan.decision.interval === "skew-corrected";
+  const buckets = isCorrected ? bucketsOf(metric, cells, plan.variants.length) : null;
+  return own.map((effect) => {
+    const [c, v] = places(plan, effect);
+    const pair = effect.adjusted === null ? null : comparedPair(pairOf(pairs, m, c, v), buckets, c, v);
+    if (pair !== null && !isAbsent(pair)) return pair;
+    return { control: arm(arms, m, c), variant: arm(arms, m, v), buckets: buckets?.(c, v, null) ?? null };
+  });
+}
+
 function unadjusted(effect: Effect, metric: Metric): ChoiceRow[] {
   return effect.adjusted === null ? [] : [row("unadjusted", effect.contrast, effect, metric)];
 }
 
 /** Other caps, other units, and the largest unit left out. */
-function otherCells(plan: Plan, metric: Metric, cells: MetricCells, own: readonly Effect[]): Rows[] {
+function otherCells(
+  plan: Plan,
+  metric: Metric,
+  cells: MetricCells,
+  own: readonly Effect[],
+  planned: readonly Compared[],
+): Rows[] {
   const variants = plan.variants.length;
   const largest = armsWithoutLargest(metric, cells, variants);
   const found = metric.summary === "quantile" ? [] : choiceArms(metric, cells, variants);
@@ -69,6 +98,7 @@ function otherCells(plan: Plan, metric: Metric, cells: MetricCells, own: readonl
       plan,
       metric,
       own.map((effect) => twoArms(plan, metric, effect, other)),
+      planned,
     );
     return own.map((effect, i) => {
       const contrast = contrasts[i] ?? null;
@@ -85,32 +115,48 @@ function twoArms(plan: Plan, metric: Metric, effect: Effect, { arms, covariates 
   return { control: arm([arms], 0, c), variant: arm([arms], 0, v) };
 }
 
-/** The same arms by the methods that the plan's rule does not take. */
-function byOtherMethods(
-  plan: Plan,
-  metric: Metric,
-  m: number,
-  arms: readonly (readonly Arm[])[],
-  pairs: readonly Pair[],
-  own: readonly Effect[],
-): Rows {
-  const all = own.map((effect): TwoArms => {
-    const [c, v] = places(plan, effect);
-    const pair = effect.adjusted === null ? null : pairOf(pairs, m, c, v);
-    if (pair !== null && !isAbsent(pair)) return { control: pair.control.arm, variant: pair.variant.arm };
-    return { control: arm(arms, m, c), variant: arm(arms, m, v) };
-  });
-  const critical = criticalOfTwoArms(plan, metric, all);
+/** The same arms by the methods that the plan's rule does not take, and by drawing and dealing their buckets. */
+function byOtherMethods(plan: Plan, metric: Metric, own: readonly Effect[], planned: readonly Compared[]): Rows {
+  const critical = criticalOfTwoArms(plan, metric, planned);
   return own.map((effect, i) => {
-    const two = all[i];
-    if (two === undefined || isAbsent(two)) return [];
+    const two = planned[i];
+    if (two === undefined) return [];
     const taken = deciding(effect).difference.method;
-    const simple = (["normal", "welch", "score"] as const).flatMap((method) => {
+    const plain = (["normal", "welch", "score"] as const).flatMap((method) => {
       const found = method === taken ? null : contrastBy(method, two.control, two.variant, critical);
       return found === null || found.difference.low === null ? [] : [row(method, found, effect, metric)];
     });
-    return [...simple, ...byShapesAndDraws(effect, metric, two)];
+    const other = effect.normality?.other ?? null;
+    const corrected =
+      other?.difference.method === "skew-corrected" ? [row("skew-corrected", other, effect, metric)] : [];
+    return [...plain, ...corrected, ...byBuckets(effect, metric, two, 2 * normalUpperTail(critical))];
   });
+}
+
+/** Bootstrap-t, with a relative interval that excludes 0 when it does; of the randomisation test whether p is under alpha. */
+function byBuckets(effect: Effect, metric: Metric, { control, variant }: Compared, alpha: number): ChoiceRow[] {
+  const { resampled } = effect;
+  const { difference } = deciding(effect);
+  const { estimate, standardError } = difference;
+  if (resampled === null || estimate === null || standardError === null) return [];
+  const { bootstrap, randomisation } = resampled;
+  const drawn = isNotDrawn(bootstrap) ? null : { low: bootstrap.low, high: bootstrap.high };
+  return [
+    ...(drawn === null
+      ? []
+      : [
+          row(
+            "bootstrap-t",
+            {
+              difference: { ...difference, ...drawn, p: null },
+              relative: relativeByEnds(control, variant, { estimate, standardError, ...drawn }),
+            },
+            effect,
+            metric,
+          ),
+        ]),
+    ...(isNotDrawn(randomisation) ? [] : [onlyP("randomisation", estimate, randomisation.p, alpha, effect)]),
+  ];
 }
 
 /** log(1 + x) is another quantity: whether there is a difference and on which side, and no more. */
@@ -123,7 +169,7 @@ function logged(plan: Plan, metric: Metric, cells: MetricCells, own: readonly Ef
     return { control: arm([logs], 0, c), variant: arm([logs], 0, v) };
   });
   const alpha = 2 * normalUpperTail(criticalOfTwoArms(plan, metric, all));
-  const contrasts = contrastsAsPlanned(plan, metric, all);
+  const contrasts = contrastsAsPlanned(plan, metric, all, null);
   return own.map((effect, i) => {
     const { estimate, p } = contrasts[i]?.difference ?? { estimate: null, p: null };
     return estimate === null || p === null ? [] : [onlyP("log", estimate, p, alpha, effect)];

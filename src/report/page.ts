@@ -7,6 +7,7 @@ import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
+import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
@@ -32,6 +33,7 @@ export interface Page {
 export interface FurtherOnMetric {
   readonly sampling: readonly SamplingPart[];
   readonly choices: readonly ChoicesFigure[];
+  readonly turning: readonly TurningTable[];
 }
 
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
@@ -66,6 +68,8 @@ export async function page(inputs: ReportInputs): Promise<Page> {
       ...metric,
       sampling: sampling.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
+      // What an effect amounts to is not for data that must be mended first.
+      turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
     power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),

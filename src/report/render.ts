@@ -10,6 +10,7 @@ const PARTIALS = [
   "decision",
   "forest",
   "choices",
+  "turning",
   "contents",
   "checks",
   "counted",

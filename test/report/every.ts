@@ -1,4 +1,5 @@
 import type { ReportInputs } from "../../src/report/types.ts";
+import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
 import { hostile } from "./hostile.ts";
@@ -12,5 +13,6 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["several variants", several],
   ["as little as there can be", little],
   ["far from normal", farFromNormal],
+  ["adjusted", adjustedCase],
   ["hostile", hostile],
 ];

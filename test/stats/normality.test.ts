@@ -2,14 +2,12 @@ import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { arms, jointSums } from "../../src/cells/index.ts";
 import type { Arm } from "../../src/cells/types.ts";
-import { contrast, isAbsent, level, normality, relativeOfInterval } from "../../src/stats/index.ts";
-import { relative } from "../../src/stats/relative.ts";
+import { contrast, normality } from "../../src/stats/index.ts";
 import { ratioTerm, shapedArm } from "../../src/stats/shaped-arm.ts";
 import { pairTables, scoreTable } from "../cells/tables.ts";
 import { metricOf } from "../checks/make.ts";
 import { ratioArm, shareArm, sumsOf } from "./arms.ts";
 import { expectWithin, present } from "./expect.ts";
-import { levelFrom } from "./levels.ts";
 
 const Z = 1.959963984540054;
 const meanArm = (values: readonly number[]): Arm => ({ kind: "mean", sums: sumsOf(values) });
@@ -178,36 +176,5 @@ describe("a contrast that asks for the skew-corrected interval", () => {
     expect(contrast(meanArm([1]), variant, Z, { alike: 1 })).toEqual(contrast(meanArm([1]), variant, Z));
     const still = meanArm([2, 2]);
     expect(contrast(still, still, Z, { alike: 1 })).toEqual(contrast(still, still, Z));
-  });
-});
-
-describe("the relative interval of a difference that reaches unevenly", () => {
-  const [c, t] = [levelFrom(900, 12, 30), levelFrom(700, 13.5, 33)];
-
-  it("is Fieller's where it reaches evenly", () => {
-    const standardError = Math.sqrt(900 / 900 + 33 ** 2 / 700);
-    const even = relativeOfInterval(c, t, { low: 1.5 - Z * standardError, high: 1.5 + Z * standardError });
-    const fieller = present(relative(c, t, Z));
-    expectWithin(present(even).low, fieller.low ?? 0, 1e-12);
-    expectWithin(present(even).high, fieller.high ?? 0, 1e-12);
-  });
-
-  it("excludes 0 exactly when the difference's does", () => {
-    for (const [low, high] of [
-      [0.01, 4],
-      [-0.01, 4],
-      [-2, 5],
-    ] as const) {
-      const found = present(relativeOfInterval(c, t, { low, high }));
-      expect(Math.sign(found.low ?? 0)).toBe(Math.sign(low));
-      expect(found.high).toBeGreaterThan(0);
-    }
-  });
-
-  it("is absent where an end lies on the wrong side of the estimate, or the control is not clear of 0", () => {
-    expect(relativeOfInterval(c, t, { low: 1.6, high: 4 })).toEqual({ absent: "control-near-zero" });
-    const near = levelFrom(900, 1, 30);
-    expect(relativeOfInterval(near, t, { low: 9, high: 16 })).toEqual({ absent: "control-near-zero" });
-    expect(isAbsent(level(meanArm([])))).toBe(true);
   });
 });

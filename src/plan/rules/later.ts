@@ -14,7 +14,7 @@ export interface Later {
 }
 
 /** One line a feature; it goes when the feature comes. */
-export const LATER: readonly Later[] = [{ of: "plan", path: ["forecast"], remedy: "Remove it." }];
+export const LATER: readonly Later[] = [];
 
 /** Apart from the list, for `Plan` has no field for them: without this they would go unseen. */
 const SUBGROUPS: Later = { of: "plan", path: ["subgroups"], remedy: "Remove it." };

@@ -2,6 +2,9 @@ import { type AdjustedContrast, adjustedSentence, covariateInWords, type Effect 
 import type { Metric, Plan } from "../../plan/types.ts";
 import { alike, count, number, percent, plural, pText, quoted } from "../../words/index.ts";
 
+/** From how many times as many units on the saving is said in units; ours. */
+const WORTH_SAYING = 1.05;
+
 /** The same effect without its adjustment, to be shown beside it; null where it has none. */
 export function unadjusted(effect: Effect): Effect | null {
   const { adjusted } = effect;
@@ -28,17 +31,15 @@ function slopeText(plan: Plan, covariate: string, { theta, centre }: AdjustedCon
 }
 
 function savedText(plan: Plan, { varianceReduction }: AdjustedContrast): string {
-  const { many } = plan.unitCalled;
   if (varianceReduction < 0.001) return "That takes away next to none of the variance of the difference.";
-  const times =
-    varianceReduction < 1
-      ? `, as about ${number(Number((1 / (1 - varianceReduction)).toPrecision(2)))} times as many ${many} would`
-      : "";
-  return `That takes away ${percent(varianceReduction)} of the variance of the difference${times}.`;
+  const taken = `That takes away ${percent(varianceReduction)} of the variance of the difference`;
+  const times = 1 / (1 - varianceReduction);
+  if (times < WORTH_SAYING || varianceReduction === 1) return `${taken}.`;
+  return `${taken}, as about ${number(Number(times.toPrecision(2)))} times as many ${plan.unitCalled.many} would.`;
 }
 
 function balanceText({ control, variant }: Effect, { balance }: AdjustedContrast): string {
-  const { p } = balance.difference;
+  const { p } = balance;
   const means = [balance.variant.mean, balance.control.mean].filter((mean) => mean !== null);
   if (means.length < 2) return "";
   const [ofVariant, ofControl] = alike(means);

@@ -1,4 +1,4 @@
-import { anyIsEnough, type Effect } from "../../decision/index.ts";
+import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
 import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";
@@ -28,9 +28,10 @@ export function methodsSection({
   version,
   reduction,
   effects,
+  choices,
 }: ReportInputs): MethodsSection {
   return {
-    methods: methods(plan, effects),
+    methods: methods(plan, effects, choices),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
     facts: facts(plan, planSha256, version, reduction),
@@ -66,7 +67,7 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
 }
 
 /** Only what this report uses. */
-function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["methods"] {
+function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choices[]): MethodsSection["methods"] {
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -166,6 +167,20 @@ function methods(plan: Plan, effects: readonly Effect[]): MethodsSection["method
         "Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 3.2; what is overstated: Gelman and Carlin 2014, Perspectives on Psychological Science 9, 641-651",
     },
     ...normalityMethods(plan, effects),
+    {
+      when: choices.some(({ rows }) => rows.length > 1),
+      name: "Other reasonable choices",
+      how: `The same difference with one choice changed and all else as planned: other caps, other ${many}, without the most extreme ${plan.unitCalled.one} of each group, unadjusted, by other methods; of the logarithm of 1 + the value only the side and p. All are taken from one pass over the log. They share the data, so how many agree says how fragile the result is and adds no evidence.`,
+      source:
+        "Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity analysis",
+    },
+    {
+      when: effects.some(({ role, zone }) => role !== "secondary" && zone !== "not-settled"),
+      name: "What would turn it",
+      how: `The level at which the ${many} of a variant that were not counted would carry the end of the interval to the limit it has passed, were those of the control like its counted ones and the interval as wide as it is.`,
+      source:
+        "ICH E9(R1), sensitivity analysis; Campbell, Pennello and Yue 2011, Journal of Biopharmaceutical Statistics 21, 180-195, tipping point",
+    },
     {
       when: true,
       name: "Who was counted",
