@@ -30,7 +30,7 @@ export function otherIntervalSentence(effect: Effect, plan: Plan, effects: reado
       ]
     : [
         `The corrected interval is ${beside}`,
-        same ? `the ${name} one to these digits too` : `the ${name} one ${counts}`,
+        same ? `the same as the ${name} one to these digits` : `the ${name} one ${counts}`,
       ];
   const end = effects === null ? "" : `; ${conclusionBy(effect, other, plan, effects)}`;
   return `${first}, ${second}${end}.${uncorrected(normality)}`;

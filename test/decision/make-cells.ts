@@ -1,7 +1,7 @@
 import { arms as armsOf } from "../../src/cells/index.ts";
 import type { Arm } from "../../src/cells/types.ts";
 import { adjustedPairs, type Effect, effects } from "../../src/decision/index.ts";
-import type { AdjustedRequest, MetricCells, Reduction, ScoreTable } from "../../src/engine/types.ts";
+import type { AdjustedRequest, MetricCells, Reduction, ScoreTable } from "../../src/engine/index.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import { cellTable, type PairUnit, pairTables, scoreTable, type Unit } from "../cells/tables.ts";
 import { reductionOf } from "../checks/make.ts";

@@ -27,7 +27,7 @@ function skewedUnits(sizes: readonly number[], missing = false): PairUnit[] {
   return sizes.flatMap((n, variant) =>
     Array.from({ length: n }, (_, i): PairUnit => {
       const x = Number(one().toFixed(4));
-      const y = Number((2 * x + one() ** 2).toFixed(4));
+      const y = Number((2 * x + one()).toFixed(4));
       return [variant, (i * 31 + variant * 7) % 1024, y, missing && i % 9 === 0 ? null : x];
     }),
   );
@@ -235,7 +235,7 @@ describe("the sentence on the other interval", () => {
       normality: effect.normality && { ...effect.normality, corrected: { low: 0, high: 0, p: 1, skew: 0 } },
     };
     expect(otherIntervalSentence(cancelled, plan, [cancelled])).toBe(
-      "The corrected interval is 2.0% to 10.0% higher, the normal one to these digits too; the conclusion stays. Groups of one size are not corrected: their skewness cancels.",
+      "The corrected interval is 2.0% to 10.0% higher, the same as the normal one to these digits; the conclusion stays. Groups of one size are not corrected: their skewness cancels.",
     );
   });
 });

@@ -102,8 +102,13 @@ function trustText(inputs: ReportInputs): string {
   const told = conclusion.decision === "undecidable" ? open.filter((check) => check.result !== "fail") : open;
   const worst = mostImportant(told);
   if (worst === null) return `${tally}.`;
-  const sentence = `${worst.sentence}${afterwards(worst, inputs)}`;
-  return told.length === 1 ? `${tally}: ${sentence}` : `${tally}; what matters most: ${sentence}`;
+  const sentence = [worst, ...farFromNormal(told, worst)].map((check) => check.sentence + afterwards(check, inputs));
+  return told.length === 1 ? `${tally}: ${sentence.join(" ")}` : `${tally}; what matters most: ${sentence.join(" ")}`;
+}
+
+/** Tails that are far off are told in any case. */
+function farFromNormal(checks: readonly Check[], told: Check): Check[] {
+  return checks.filter((check) => check.id === "normality" && check.strong && check !== told);
 }
 
 /** Of tails that are far off, what the other interval says; nothing where no estimate may stand on the page. */

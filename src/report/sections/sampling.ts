@@ -166,7 +166,7 @@ async function figure(effect: Effect, plan: Plan, id: string): Promise<SamplingF
     reading: `Stepped: the difference over its standard error, drawn anew from the groups\u2019 own values. Dashed: the normal curve. Dark: beyond \u2212${limit} and ${limit}, where the interval lies wholly below or wholly above the truth, by the normal curve ${percent(tail)} each; of ${count(draws)} draws, chance alone can move that by ${chanceOf(tail, draws)} points.`,
     drawing: await draw(
       sampling(rows, critical, (value) => fixed(value, Number.isInteger(value) ? 0 : 2)),
-      id,
+      `${id}-drawing`,
       { title: caption, description: `Beyond ${limit} on either side lie, with ${list(told)}.` },
     ),
     columns: ["from", "to", ...shown.map(({ share }) => `${SIZES[share]?.words ?? ""} of the ${many}`), "normal curve"],
