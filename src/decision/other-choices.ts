@@ -1,9 +1,10 @@
 import { type Arm, armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "../cells/index.ts";
 import type { MetricCells, Reduction } from "../engine/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrastBy, isAbsent, isNotDrawn, normalUpperTail, relativeByEnds } from "../stats/index.ts";
+import { contrastBy, isAbsent, normalUpperTail } from "../stats/index.ts";
 import { bucketsOf } from "./buckets.ts";
 import { adjustedTwoArms, contrastsAsPlanned, criticalOfTwoArms, type TwoArms } from "./choice-contrasts.ts";
+import { byShapesAndDraws } from "./choice-draws.ts";
 import { type ChoiceRow, onlyP, planRow, row } from "./choice-rows.ts";
 import { type Compared, comparedPair } from "./compared.ts";
 import { type Pair, pairOf } from "./covariates.ts";
@@ -122,41 +123,12 @@ function byOtherMethods(plan: Plan, metric: Metric, own: readonly Effect[], plan
     const two = planned[i];
     if (two === undefined) return [];
     const taken = deciding(effect).difference.method;
-    const plain = (["normal", "welch", "score"] as const).flatMap((method) => {
+    const simple = (["normal", "welch", "score"] as const).flatMap((method) => {
       const found = method === taken ? null : contrastBy(method, two.control, two.variant, critical);
       return found === null || found.difference.low === null ? [] : [row(method, found, effect, metric)];
     });
-    const other = effect.normality?.other ?? null;
-    const corrected =
-      other?.difference.method === "skew-corrected" ? [row("skew-corrected", other, effect, metric)] : [];
-    return [...plain, ...corrected, ...byBuckets(effect, metric, two, 2 * normalUpperTail(critical))];
+    return [...simple, ...byShapesAndDraws(effect, metric, two)];
   });
-}
-
-/** Bootstrap-t, with a relative interval that excludes 0 when it does; of the randomisation test whether p is under alpha. */
-function byBuckets(effect: Effect, metric: Metric, { control, variant }: Compared, alpha: number): ChoiceRow[] {
-  const { resampled } = effect;
-  const { difference } = deciding(effect);
-  const { estimate, standardError } = difference;
-  if (resampled === null || estimate === null || standardError === null) return [];
-  const { bootstrap, randomisation } = resampled;
-  const drawn = isNotDrawn(bootstrap) ? null : { low: bootstrap.low, high: bootstrap.high };
-  return [
-    ...(drawn === null
-      ? []
-      : [
-          row(
-            "bootstrap-t",
-            {
-              difference: { ...difference, ...drawn, p: null },
-              relative: relativeByEnds(control, variant, { estimate, standardError, ...drawn }),
-            },
-            effect,
-            metric,
-          ),
-        ]),
-    ...(isNotDrawn(randomisation) ? [] : [onlyP("randomisation", estimate, randomisation.p, alpha, effect)]),
-  ];
 }
 
 /** log(1 + x) is another quantity: whether there is a difference and on which side, and no more. */

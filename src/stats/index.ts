@@ -47,7 +47,7 @@ export { type QuantileContrast, quantileContrast } from "./quantile.ts";
 export { type QuantileArm, quantileSearch, quantilesCompared } from "./quantile-arms.ts";
 export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
 export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
-export { relativeByEnds } from "./relative-by-ends.ts";
+export { relativeOfInterval } from "./relative.ts";
 export { type Resampled, resampled } from "./resampled.ts";
 export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
 export { type Counts, counts } from "./share.ts";

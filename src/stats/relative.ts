@@ -35,6 +35,34 @@ export function relative(control: Level, variant: Level, q: number): Relative | 
   };
 }
 
+/**
+ * The same for a difference whose interval reaches unevenly, such as the bootstrap-t's: each end has the critical value
+ * that the difference's end on that side has, q = (D - low) / SE below and (high - D) / SE above.
+ * @returns also `control-near-zero` where an end of the difference does not lie on its side of D
+ */
+export function relativeOfInterval(
+  control: Level,
+  variant: Level,
+  { low, high }: { readonly low: number; readonly high: number },
+): Relative | Absent {
+  const spread = spreadOf(control, variant);
+  if (isAbsent(spread)) return spread;
+  const difference = estimateOf(control, variant);
+  const termsOf = (half: number) => {
+    const q = half / spread.standardError;
+    const [halfControl, halfVariant] = [q * Math.sqrt(spread.c), q * Math.sqrt(spread.t)];
+    return { control: control.value, variant: variant.value, difference, halfControl, halfVariant, half };
+  };
+  const [below, above] = [termsOf(difference - low), termsOf(high - difference)];
+  if (!(below.half > 0 && above.half > 0)) return { absent: "control-near-zero" };
+  if (!(control.value > Math.max(below.halfControl, above.halfControl))) return { absent: "control-near-zero" };
+  return {
+    estimate: relativeOf(control.exact, variant.exact),
+    low: lowerRatioLimit(below),
+    high: upperRatioLimit(above),
+  };
+}
+
 /** t / c - 1: exact, rounded once. The control's level is not 0. */
 export function relativeOf(c: Fraction, t: Fraction): number {
   const over = differenceOf(c, t);
