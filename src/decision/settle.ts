@@ -71,6 +71,7 @@ export function unsizedSentences(plan: Plan, unsized: readonly Unsized[]): strin
   const sentences = unsized.map(({ effect, why }) => {
     const metric = metricOf(effect, plan);
     const rule = ruleOf(metric);
+    if (metric.quantile !== null) return `For ${metric.name} no size is computed, since it is a quantile.`;
     if (why === null || rule === null) return `For ${metric.name} these data tell no size.`;
     const amount = amountText(metric, rule);
     const chance = `${planPercent((1 - plan.decision.confidence) / 2)} of tests at most`;

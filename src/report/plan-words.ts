@@ -42,7 +42,7 @@ export function measureText(metric: Metric, plan: Plan): string {
   const without =
     metric.withoutRows === "zero" ? `a ${one} without such rows counts as 0` : `a ${one} without such rows is left out`;
   if (metric.quantile !== null) {
-    return `The ${percentile(metric.quantile)} over all ${many} of ${amountOf(metric.of)} ${when}: ${outOf(metric.quantile)} ${many} have no more; ${without}. ${better}`;
+    return `The ${percentile(metric.quantile)} over ${many} of ${amountOf(metric.of)} ${when}: ${outOf(metric.quantile)} ${many} have no more; ${without}. ${better}`;
   }
   return `The mean per ${one} of ${amountOf(metric.of)} ${when}; ${without}.${cap} ${better}`;
 }

@@ -24,8 +24,9 @@ export interface Balance {
  *   z and p as for any mean (normal; Welch's t with under 200 units in an arm); where a nominal 2.5% tail is off by more than
  *   a fifth, the larger of that p and the skew-corrected one
  *   standardised difference = (mean_t - mean_c) / sqrt((s_t^2 + s_c^2) / 2)
- * A covariate is often heavy-tailed, such as money spent before, and arms of 1 to 9 then differ by p < 0.001 in one sound
- * test of a hundred; with the correction, which takes the arms as alike since only chance made them, in about one of 500.
+ * A covariate is often heavy-tailed, such as money spent before. 2,700 against 300 units, lognormal with sigma 1.5 or one in
+ * ten with a value: simulated p < 0.001 in 1.4% and 1.8% of sound allocations, with the correction in 0.16% and 0.12%. It
+ * takes the arms as alike, since only chance made them.
  * p asks whether the allocation was random; the standardised difference, which does not grow with the number of units,
  * whether the arms are alike enough: 0.1 is the usual mark of a difference worth a look.
  * @param alpha of the interval of the difference

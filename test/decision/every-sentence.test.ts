@@ -29,6 +29,7 @@ const ABSENT: readonly Absent["absent"][] = [
   "no-width",
   "same-covariate",
   "no-expected-effect",
+  "not-for-quantiles",
   "not-built",
 ];
 /** Around 0 and a rule of 5%: every zone of every role in both directions, ends on the limits, open ends. */
@@ -64,6 +65,13 @@ const KINDS: readonly Partial<Metric>[] = [
     summary: "mean",
     of: { event: "booking", where: [], aggregate: { kind: "sum", column: "fare" } },
     unitOfMeasure: "kr",
+  },
+  {
+    summary: "quantile",
+    quantile: "0.95",
+    of: { event: "page", where: [], aggregate: { kind: "max", column: "seconds" } },
+    unitOfMeasure: "s",
+    withoutRows: "leave-out",
   },
   { summary: "ratio-of-totals", per: { event: "search", where: [], aggregate: { kind: "count" } } },
 ];

@@ -2,6 +2,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { hostile } from "./hostile.ts";
+import { quantiles } from "./quantiles.ts";
 
 /** Every hand-made report, by name. */
 export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])[] = [
@@ -12,5 +13,6 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["several variants", several],
   ["as little as there can be", little],
   ["adjusted", adjustedCase],
+  ["quantiles", quantiles],
   ["hostile", hostile],
 ];

@@ -1,6 +1,6 @@
 import { type AdjustedContrast, adjustedSentence, covariateInWords, type Effect } from "../../decision/index.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
-import { alike, count, number, percent, plural, pText, quoted } from "../../words/index.ts";
+import { alike, count, percent, plain, plural, pText, quoted } from "../../words/index.ts";
 
 /** From how many times as many units on the saving is said in units; ours. */
 const WORTH_SAYING = 1.05;
@@ -26,16 +26,19 @@ export function adjustedNotes(metric: Metric, plan: Plan, effects: readonly Effe
 
 function slopeText(plan: Plan, covariate: string, { theta, centre }: AdjustedContrast): string {
   const [above, below] = theta < 0 ? ["more", "less"] : ["less", "more"];
-  const size = number(Math.abs(theta));
-  return `Adjusted for ${covariate}: for each 1 of it above the mean of both groups, ${number(centre)}, a ${plan.unitCalled.one}\u2019s value counts ${size} ${above}, and for each 1 below it ${size} ${below}.`;
+  const size = digits(Math.abs(theta), 3);
+  return `Adjusted for ${covariate}: for each 1 of it above the mean of both groups, ${digits(centre, 4)}, a ${plan.unitCalled.one}\u2019s value counts ${size} ${above}, and for each 1 below it ${size} ${below}.`;
 }
+
+/** So many significant digits, without zeros at the end. */
+const digits = (value: number, many: number) => plain(Number(value.toPrecision(many)));
 
 function savedText(plan: Plan, { varianceReduction }: AdjustedContrast): string {
   if (varianceReduction < 0.001) return "That takes away next to none of the variance of the difference.";
   const taken = `That takes away ${percent(varianceReduction)} of the variance of the difference`;
   const times = 1 / (1 - varianceReduction);
   if (times < WORTH_SAYING || varianceReduction === 1) return `${taken}.`;
-  return `${taken}, as about ${number(Number(times.toPrecision(2)))} times as many ${plan.unitCalled.many} would.`;
+  return `${taken}, as about ${digits(times, 2)} times as many ${plan.unitCalled.many} would.`;
 }
 
 function balanceText({ control, variant }: Effect, { balance }: AdjustedContrast): string {

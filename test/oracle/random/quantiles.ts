@@ -8,15 +8,17 @@ export const MANY_UNITS = 10;
 
 const SHARES = ["0.5", "0.5", "0.25", "0.9", "75%", "0.6", "12.5%", "0.01", "0.333"];
 
-/** Now and then sixty units more, and then most metrics are quantiles; else some of the means without a cap. */
+/** Now and then sixty units more, and then most means become quantiles; else some of the plain ones. */
 export function withQuantiles(dice: Dice, plan: RandomPlan, shape: Shape): { plan: RandomPlan; shape: Shape } {
   const { metrics } = plan.pieces;
   if (!Array.isArray(metrics)) throw new Error("a plan without a list of metrics");
   const many = dice.chance(0.15);
   const changed = (metrics as readonly { readonly [key: string]: Piece }[]).map((metric) => {
-    const { cap, ...rest } = metric;
-    const isChanged = many ? dice.chance(0.9) : cap === undefined && dice.chance(0.3);
-    return isChanged && metric.summary === "mean" && !("adjust-for" in metric)
+    // Neither is for quantiles.
+    const { cap, "adjust-for": covariate, ...rest } = metric;
+    const isPlain = cap === undefined && covariate === undefined;
+    const isChanged = many ? dice.chance(0.9) : isPlain && dice.chance(0.3);
+    return isChanged && metric.summary === "mean"
       ? { ...rest, summary: "quantile", quantile: digits(dice.pick(SHARES)) }
       : metric;
   });
