@@ -21,6 +21,7 @@ export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
 export { enrolledADay, type NextTest, nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
 // how good the normal approximation is
 export { contrastFigures } from "./normality.ts";
+export { otherIntervalSentence } from "./normality-words.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";

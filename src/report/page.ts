@@ -6,6 +6,7 @@ import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
 
@@ -30,6 +31,7 @@ export interface Page {
 
 /** What stands below a metric's tables. */
 export interface FurtherOnMetric {
+  readonly sampling: readonly SamplingPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
 }
@@ -46,6 +48,8 @@ const CONTENTS = [
 
 export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
+  const isDecided = conclusion.decision !== "undecidable";
+  const sampling = await samplingParts(plan, effects, reduction, isDecided);
   const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
@@ -62,6 +66,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     counted: countedSection(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
+      sampling: sampling.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),

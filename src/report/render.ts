@@ -15,6 +15,7 @@ const PARTIALS = [
   "checks",
   "counted",
   "metrics",
+  "sampling",
   "power",
   "methods",
 ] as const;

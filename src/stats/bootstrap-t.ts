@@ -1,6 +1,6 @@
 import { type BucketCells, type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
 import { drawRows, type Studentised, studentised, sumRows } from "./draws.ts";
-import { generator, type Seed } from "./generator.ts";
+import { type Seed, wordsOf } from "./generator.ts";
 import { type Histogram, histogram } from "./histogram.ts";
 import { normalCritical } from "./normal.ts";
 import { type NotDrawn, tooFew, tooManyUndefined } from "./resampling.ts";
@@ -48,13 +48,13 @@ export function bootstrapT(
   const few = tooFew(cells, shares);
   if (few !== null) return few;
   const table = tableOfArms(cells);
-  const next = generator(seed);
+  const fill = wordsOf(seed);
   const t = studentised(cells.kind, wholeOf(table), gapOfX(cells));
   const units = Math.min(...[cells.control.n, cells.variant.n].map((n) => n.reduce((sum, m) => sum + m, 0)));
 
   const found = SHARES.map((share) => ({
     share,
-    values: units * share < UNITS_AT_LEAST ? null : drawnT(table, Math.round(table.rows * share), draws, t, next),
+    values: units * share < UNITS_AT_LEAST ? null : drawnT(table, Math.round(table.rows * share), draws, t, fill),
   }));
   const all = found.at(-1)?.values ?? new Float64Array();
   const undefinedDraws = draws - all.length;
@@ -82,13 +82,19 @@ function beyond(values: Float64Array, z: number): TailPair {
 }
 
 /** T of each draw of `many` buckets, sorted; without the undefined ones. */
-function drawnT(table: DrawTable, many: number, draws: number, t: Studentised, next: () => number): Float64Array {
+function drawnT(
+  table: DrawTable,
+  many: number,
+  draws: number,
+  t: Studentised,
+  fill: (into: Uint32Array) => void,
+): Float64Array {
   const picks = new Uint32Array(many);
   const sums = new Float64Array(table.width);
   const values = new Float64Array(draws);
   let kept = 0;
   for (let draw = 0; draw < draws; draw++) {
-    drawRows(picks, table.rows, next);
+    drawRows(picks, table.rows, fill);
     sumRows(table, picks, sums);
     const value = t(sums);
     if (!Number.isNaN(value)) values[kept++] = value;

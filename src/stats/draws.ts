@@ -46,10 +46,11 @@ function sumThrees(cells: Float64Array, width: number, picks: Uint32Array, sums:
   }
 }
 
-/** Rows drawn with replacement; `next` gives 32-bit words. */
-export function drawRows(picks: Uint32Array, rows: number, next: () => number): void {
+/** Rows drawn with replacement; `fill` gives 32-bit words. */
+export function drawRows(picks: Uint32Array, rows: number, fill: (into: Uint32Array) => void): void {
   const scale = rows / 2 ** 32;
-  for (let i = 0; i < picks.length; i++) picks[i] = next() * scale;
+  fill(picks);
+  for (let i = 0; i < picks.length; i++) picks[i] = (picks[i] as number) * scale;
 }
 
 /** The first `many` of all rows become a random choice of that many, the rest stay behind them (Fisher and Yates 1938). */

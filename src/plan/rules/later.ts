@@ -14,9 +14,7 @@ export interface Later {
 }
 
 /** One line a feature; it goes when the feature comes. */
-export const LATER: readonly Later[] = [
-  { of: "plan", path: ["decision", "interval"], value: "skew-corrected", remedy: "Write normal, or remove the key." },
-];
+export const LATER: readonly Later[] = [];
 
 /** Apart from the list, for `Plan` has no field for them: without this they would go unseen. */
 const SUBGROUPS: Later = { of: "plan", path: ["subgroups"], remedy: "Remove it." };

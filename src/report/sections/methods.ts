@@ -3,6 +3,7 @@ import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
+import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
 export interface MethodsSection {
@@ -165,6 +166,7 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
       source:
         "Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 3.2; what is overstated: Gelman and Carlin 2014, Perspectives on Psychological Science 9, 641-651",
     },
+    ...normalityMethods(plan, effects),
     {
       when: choices.some(({ rows }) => rows.length > 1),
       name: "Other reasonable choices",
