@@ -1,6 +1,7 @@
 /** From a plan and its log to counts and cells. */
 
 export { unitLineIds } from "./layout.ts";
-export { type Progress, type ReduceOptions, reduce } from "./reduce.ts";
+export { type Progress, type ReduceOptions, reduce, withReduction } from "./reduce.ts";
+export type { AdjustedRequest, Session } from "./session.ts";
 export type * from "./types.ts";
 export { UnusableLog } from "./unusable.ts";

@@ -1,13 +1,14 @@
 import type { Plan } from "../plan/index.ts";
 import { capValue } from "./caps.ts";
+import { choiceCells } from "./choices.ts";
 import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
 import { scoreTables } from "./scores.ts";
-import { capped, countedRows, type Dialect, leftOut, name, type Statement, sql } from "./sql/index.ts";
+import { capped, countedRows, type Dialect, leftOut, name, pairsAtEnds, type Statement, sql } from "./sql/index.ts";
 import { decimalMeasures, decimalTables, jointTables } from "./tables.ts";
-import type { CellTable, MetricCells } from "./types.ts";
+import type { CellTable, MetricCells, UnitEnds } from "./types.ts";
 
-/** A metric's values over a row of `units`. */
+/** A metric's values over a row of `candidates`. */
 export interface MetricValue {
   /** Before the cap. */
   readonly plain: Statement;
@@ -40,7 +41,7 @@ export async function metricValues(
   );
 }
 
-/** Stages 9 and 10: pivots, scales and cells; then the ratios' scores and theirs. */
+/** Stages 9 and 10: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices. */
 export async function metricCells(
   plan: Plan,
   values: readonly MetricValue[],
@@ -62,6 +63,16 @@ export async function metricCells(
   const joints = await jointTables(pairs, engine);
   const ratios = values.flatMap(({ value, per }, m) => (per === null ? [] : [{ m, a: value, b: per }]));
   const scores = await scoreTables(plan, ratios, engine, dialect);
+  const choices = await choiceCells(
+    plan,
+    plan.metrics.flatMap((metric, m) => {
+      const own = values[m];
+      return own === undefined ? [] : [{ metric, plain: own.plain, value: own.value, paired: paired[m] ?? null }];
+    }),
+    engine,
+    dialect,
+  );
+  const ends = await engine.query(pairsAtEnds(values.map(({ value }, m) => [value, paired[m] ?? null] as const)));
   const plain = values.map((value) => value.plain);
   const out = await engine.query(
     leftOut(
@@ -88,6 +99,8 @@ export async function metricCells(
       of: tableOf(tables, m),
       ratio: hasPartner && score !== undefined ? { per: x, score, joint } : null,
       covariate: hasPartner && metric.adjustFor !== null ? { x, joint } : null,
+      choices: choices[m] ?? [],
+      ends: plan.variants.map((_, v) => endsOf(ends, v, m)),
     };
   });
 }
@@ -103,4 +116,18 @@ function byVariant(plan: Plan, rows: readonly Row[], column: string): number[] {
     const row = rows.find((found) => Number(found.variant) === v);
     return row === undefined ? 0 : count(row, column);
   });
+}
+
+function endsOf(rows: readonly Row[], variant: number, m: number): UnitEnds | null {
+  const row = rows.find((found) => Number(found.variant) === variant);
+  const at = (column: string) => {
+    const value = row?.[column];
+    return typeof value === "object" && value !== null ? value.nano : null;
+  };
+  const [least, most] = [at(`ly${m}`), at(`my${m}`)];
+  if (least === null || most === null) return null;
+  return {
+    smallest: { value: least, x: at(`lx${m}`) },
+    largest: { value: most, x: at(`mx${m}`) },
+  };
 }

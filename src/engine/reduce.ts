@@ -5,20 +5,23 @@ import { logProblems, noSuchList, type Plan, type PlanSource, type Problem } fro
 import { openDuckdb } from "./duckdb.ts";
 import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
 import { isFile, neighbours } from "./files.ts";
-import { type Layout, layout as layoutOf } from "./layout.ts";
+import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { readLists } from "./lists.ts";
 import { logEnd } from "./logEnd.ts";
-import { metricCells, metricValues } from "./metrics.ts";
+import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
+import { openSession, type Session } from "./session.ts";
 import {
   atEnrolment,
+  candidates,
   copies,
   type Dialect,
   duckdb,
   enrolmentKey,
+  enrolmentRange,
   enrolments,
   markDuplicates,
   needsEnrollingRow,
@@ -28,7 +31,7 @@ import {
   units,
 } from "./sql/index.ts";
 import type { Reduction } from "./types.ts";
-import { dayRuns, offsetsByLocalTime } from "./zone.ts";
+import { dayRuns, localDay, offsetsByLocalTime } from "./zone.ts";
 
 export interface ReduceOptions {
   readonly threads?: number | undefined;
@@ -45,18 +48,24 @@ export interface Progress {
   readonly share: number | null;
 }
 
+/** The reduction of a log, without what can be asked afterwards. */
+export const reduce = (planned: Plan | null, source: PlanSource, folder: string, options: ReduceOptions = {}) =>
+  withReduction(planned, source, folder, options, async (reduction) => ({ reduction }));
+
 /**
- * The log of a plan, reduced to cells and counts.
+ * The log of a plan, reduced to cells and counts, while the engine still holds the units: what needs a figure of these
+ * sums first (an adjusted value, an order statistic) is asked of the session.
  * @param planned the plan, or null where it has mistakes: then only the log's own problems are looked for
- * @returns the reduction, or what is wrong between plan and log
+ * @returns what `use` gives, or what is wrong between plan and log
  * @throws UnusableLog when the log is there but cannot be used
  */
-export async function reduce(
+export async function withReduction<T>(
   planned: Plan | null,
   source: PlanSource,
   folder: string,
-  options: ReduceOptions = {},
-): Promise<{ reduction: Reduction } | { problems: readonly Problem[] }> {
+  options: ReduceOptions,
+  use: (reduction: Reduction, session: Session) => Promise<T>,
+): Promise<T | { problems: readonly Problem[] }> {
   const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
   const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
   const stop = () => engine.interrupt();
@@ -65,7 +74,8 @@ export async function reduce(
     const log = await openLog(source, folder, engine, workFolder);
     const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
     if (planned === null || problems.length > 0) return { problems };
-    return { reduction: await stages(planned, folder, workFolder, log, engine, duckdb, options) };
+    const { reduction, values } = await stages(planned, folder, workFolder, log, engine, duckdb, options);
+    return await use(reduction, openSession(planned, values, engine, duckdb));
   } finally {
     options.signal?.removeEventListener("abort", stop);
     engine.close();
@@ -81,7 +91,7 @@ async function stages(
   engine: Engine,
   dialect: Dialect,
   options: ReduceOptions,
-): Promise<Reduction> {
+): Promise<{ reduction: Reduction; values: MetricValue[] }> {
   const layout = layoutOf(plan, log.groups);
   let rowsRead = 0;
   const stage = (name: string, share: number) => {
@@ -120,7 +130,9 @@ async function stages(
 
   stage("adding up each unit", 0.75);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
-  await engine.run(units(plan, layout, days, dialect));
+  const firstDay = await firstEnrolmentDay(plan, layout, engine);
+  await engine.run(candidates(plan, layout, days, firstDay, dialect));
+  await engine.run(units());
   stage("adding up cells", 0.9);
   const values = await metricValues(plan, layout, engine, dialect);
   const metrics = await metricCells(plan, values, engine, dialect);
@@ -131,7 +143,7 @@ async function stages(
     await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
   }
   stage("done", 1);
-  return {
+  const reduction = {
     engine: { name: engine.name, version: engine.version },
     inputs: log.files.map((file, i) => ({
       name: file.name,
@@ -144,6 +156,15 @@ async function stages(
     facts: found,
     metrics,
   };
+  return { reduction, values };
+}
+
+/** The local day on which the first analysed unit was enrolled. */
+async function firstEnrolmentDay(plan: Plan, layout: Layout, engine: Engine): Promise<number | null> {
+  if (!layout.hasTime) return null;
+  const [range = {}] = await engine.query(enrolmentRange(unitLineIds(plan).length - 1));
+  const firstUs = wholeOrNull(range, "first_us");
+  return firstUs === null ? null : localDay(firstUs, plan.timezone);
 }
 
 async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {

@@ -1,7 +1,17 @@
 import { count, type Engine, nano, type Row, real, whole, wholeOrNull } from "./engine.ts";
 import { nanoText } from "./nano.ts";
 import { pivotAndScale } from "./pivot.ts";
-import { cells, classes, type Dialect, decimalValue, jointCells, type Measured, type Statement } from "./sql/index.ts";
+import {
+  cells,
+  classes,
+  type Dialect,
+  decimalValue,
+  EACH_BUCKET,
+  jointCells,
+  type Measured,
+  type Over,
+  type Statement,
+} from "./sql/index.ts";
 import type { CellTable, JointTable, ScoreTable } from "./types.ts";
 
 /** From values over units to tables of exact sums. */
@@ -37,10 +47,14 @@ export async function decimalMeasures(
   });
 }
 
-export async function decimalTables(measures: readonly DecimalMeasure[], engine: Engine): Promise<CellTable[]> {
+export async function decimalTables(
+  measures: readonly DecimalMeasure[],
+  engine: Engine,
+  over: Over = EACH_BUCKET,
+): Promise<CellTable[]> {
   const found = await someAtATime(
     measures.map((measure) => measure.value),
-    (some) => engine.query(cells(some)),
+    (some) => engine.query(cells(some, over)),
   );
   return measures.map((measure, i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };
@@ -59,10 +73,11 @@ export async function decimalTables(measures: readonly DecimalMeasure[], engine:
 export async function doubleTables(
   values: readonly { readonly value: Measured; readonly scale: number }[],
   engine: Engine,
+  over: Over = EACH_BUCKET,
 ): Promise<ScoreTable[]> {
   const found = await someAtATime(
     values.map(({ value }) => value),
-    (some) => engine.query(cells(some)),
+    (some) => engine.query(cells(some, over)),
   );
   return values.map(({ scale }, i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };
@@ -77,10 +92,14 @@ export async function doubleTables(
 
 export type MeasuredPair = readonly [DecimalMeasure, DecimalMeasure];
 
-export async function jointTables(pairs: readonly MeasuredPair[], engine: Engine): Promise<JointTable[]> {
+export async function jointTables(
+  pairs: readonly MeasuredPair[],
+  engine: Engine,
+  over: Over = EACH_BUCKET,
+): Promise<JointTable[]> {
   const found = await someAtATime(
     pairs.map(([y, x]) => [y.value, x.value] as const),
-    (some) => engine.query(jointCells(some)),
+    (some) => engine.query(jointCells(some, over)),
   );
   return pairs.map(([y, x], i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };

@@ -77,6 +77,33 @@ export interface MetricCells {
   readonly ratio: { readonly per: CellTable; readonly score: ScoreTable; readonly joint: JointTable } | null;
   /** x of the adjusted contrast, over the units that have one and a value; joint sums of (value, x) over the same. */
   readonly covariate: { readonly x: CellTable; readonly joint: JointTable } | null;
+  /** The same metric under other reasonable choices (METHODS 6): one cell an arm, bucket 0. */
+  readonly choices: readonly ChoiceCells[];
+  /** Per variant the pair (value, and x of a ratio's denominator or a covariate) of the unit with the smallest and the largest value. */
+  readonly ends: readonly (UnitEnds | null)[];
+}
+
+export type ChoiceId =
+  | "no-cap"
+  | "cap-0.99"
+  | "cap-0.999"
+  | "log"
+  | "other-way-in-two-variants"
+  | "any-follow-up"
+  | "without-first-day";
+
+export interface ChoiceCells {
+  readonly choice: ChoiceId;
+  readonly of: CellTable;
+  readonly joint: JointTable | null;
+  /** Only for log: log(1 + x), cells of a double without exact total. */
+  readonly logged: ScoreTable | null;
+}
+
+/** In 10^-9 of the unit of each; x is null where there is none. */
+export interface UnitEnds {
+  readonly smallest: { readonly value: bigint; readonly x: bigint | null };
+  readonly largest: { readonly value: bigint; readonly x: bigint | null };
 }
 
 /**

@@ -172,6 +172,8 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
     of,
     ratio: null,
     covariate: null,
+    choices: [],
+    ends: [],
   };
 }
 

@@ -122,5 +122,7 @@ function cellsOf(name: string, plan: Plan): MetricCells {
     of: noCells,
     ratio: null,
     covariate: null,
+    choices: [],
+    ends: [],
   };
 }

@@ -34,7 +34,7 @@ export const doubleValue = (x: Statement, scale: number): Measured => ({
  * Reads   units
  * Gives   variant, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
  */
-export function cells(values: readonly Measured[]): Statement {
+export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): Statement {
   // Three nested levels, so that each of u, its powers and their whole parts is computed once a unit.
   const us = values.flatMap((value, i) => [sql`${value.u} AS ${name(`u${i}`)}`, sql`${value.x} AS ${name(`x${i}`)}`]);
   const terms = values.flatMap((_, i) => {
@@ -53,11 +53,25 @@ export function cells(values: readonly Measured[]): Statement {
     SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
     FROM (
       SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`bucket`, ...us])} FROM units)
+      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
     )
     GROUP BY variant, bucket
     ORDER BY variant, bucket`;
 }
+
+/** Which of the candidates, and in which groups. */
+export interface Over {
+  readonly bucket: Statement;
+  readonly units: Statement;
+}
+export const EACH_BUCKET: Over = { bucket: sql`bucket`, units: sql`analysed` };
+export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
+/** Arms apart by what other choices ask: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day. */
+export const EACH_STANDING: Over = {
+  bucket: sql`CASE WHEN analysed THEN 1 ELSE 0 END + CASE WHEN other_way THEN 2 ELSE 0 END
+    + CASE WHEN any_follow_up THEN 4 ELSE 0 END + CASE WHEN first_day THEN 8 ELSE 0 END`,
+  units: sql`TRUE`,
+};
 
 const PAIRS = ["10", "01", "20", "11", "02"] as const;
 
@@ -65,7 +79,7 @@ const PAIRS = ["10", "01", "20", "11", "02"] as const;
  * Joint sums of pairs of values, over the units that have both.
  * Gives   variant, bucket, and per pair i: n<i>, h<i>_jk, l<i>_jk, y<i> and x<i> (exact sums)
  */
-export function jointCells(pairs: readonly (readonly [Measured, Measured])[]): Statement {
+export function jointCells(pairs: readonly (readonly [Measured, Measured])[], over: Over = EACH_BUCKET): Statement {
   const us = pairs.flatMap(([y, x], i) => [
     sql`${y.u} AS ${name(`u${i}`)}, ${x.u} AS ${name(`w${i}`)}`,
     sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.x} END AS ${name(`y${i}`)}`,
@@ -96,7 +110,7 @@ export function jointCells(pairs: readonly (readonly [Measured, Measured])[]): S
     SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
     FROM (
       SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`bucket`, ...us])} FROM units)
+      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
     )
     GROUP BY variant, bucket
     ORDER BY variant, bucket`;
@@ -108,6 +122,19 @@ function twoIntegers(t: Statement, suffix: string): Statement[] {
     sql`coalesce(sum(CAST(floor(${t}) AS BIGINT)), 0) AS ${name(`h${suffix}`)}`,
     sql`coalesce(sum(CAST(floor((${t} - floor(${t})) * ${TWO_60} + 0.5) AS BIGINT)), 0) AS ${name(`l${suffix}`)}`,
   ];
+}
+
+/** Per variant the pair of the unit with the smallest and of that with the largest value; ties by x. */
+export function pairsAtEnds(pairs: readonly (readonly [Statement, Statement | null])[]): Statement {
+  const ends = pairs.flatMap(([y, x], i) => {
+    const pair = sql`{'y': ${y}, 'x': ${x ?? sql`CAST(NULL AS DECIMAL(38, 9))`}}`;
+    const has = sql`FILTER (WHERE ${y} IS NOT NULL)`;
+    return [
+      sql`(min(${pair}) ${has}).y AS ${name(`ly${i}`)}, (min(${pair}) ${has}).x AS ${name(`lx${i}`)}`,
+      sql`(max(${pair}) ${has}).y AS ${name(`my${i}`)}, (max(${pair}) ${has}).x AS ${name(`mx${i}`)}`,
+    ];
+  });
+  return sql`SELECT ${list([sql`variant`, ...ends])} FROM units GROUP BY variant`;
 }
 
 /** Powers by repeated multiplication, left to right: ((u u) u) u. */
@@ -151,6 +178,10 @@ export function atRank(x: Statement, rank: bigint, n: bigint): Statement {
     ? sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x DESC LIMIT 1 OFFSET ${n - rank}`
     : sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
 }
+
+/** The value at a rank of one arm. */
+export const atRankOfArm = (x: Statement, variant: number, rank: bigint): Statement =>
+  sql`SELECT ${x} AS x FROM units WHERE variant = ${variant} AND ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
 
 /** Units per variant, those without a value, and those above a cap. Gives variant, units, none<p>, over<p>. */
 export function leftOut(values: readonly Statement[], caps: readonly (string | null)[], dialect: Dialect): Statement {

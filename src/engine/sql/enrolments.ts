@@ -91,7 +91,9 @@ export const needsEnrollingRow = (layout: Layout): boolean =>
 /**
  * Stage 6: each unit and the line on which it ends (DESIGN 4, rule 6), first that applies.
  * Reads   seen, at_enrolment (where something is judged at enrolment), list_<i>
- * Writes  enrolments: unit, rows, enrolled_us, variant, switched, line (index into unitLineIds)
+ * Writes  enrolments: unit, rows, enrolled_us, variant, switched, line (index into unitLineIds), and for other reasonable
+ *         choices whether the unit were analysed if units in two variants were treated the other way (other_way) or if
+ *         follow-up need not be complete (any_follow_up)
  */
 export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigint | null): Statement {
   const variants = plan.variants.length;
@@ -109,23 +111,30 @@ export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigin
         : name(`${filter.kind === "ever" ? "e" : "a"}${filter.flag}`);
     return sql`WHEN ${condition} THEN ${line(`filter:${filter.name}`)}`;
   });
-  const cases = [
+  const dates = isOutside.length === 0 ? [] : [sql`WHEN ${join(isOutside, " OR ")} THEN ${line("outside-enrolment")}`];
+  const enrolled = [
     sql`WHEN key IS NULL THEN ${line("not-enrolled")}`,
-    ...(isOutside.length === 0 ? [] : [sql`WHEN ${join(isOutside, " OR ")} THEN ${line("outside-enrolment")}`]),
+    ...dates,
     sql`WHEN variant = ${variants} THEN ${line("unknown-variant")}`,
-    ...(plan.enrolment.inTwoVariants === "exclude" ? [sql`WHEN switched THEN ${line("switched")}`] : []),
-    ...filters,
-    ...(plan.followUp?.incomplete === "exclude" && logEndUs !== null
-      ? [sql`WHEN enrolled_us + ${followUpUs(plan)} > ${logEndUs} THEN ${line("follow-up")}`]
-      : []),
   ];
+  const switchers = [sql`WHEN switched THEN ${line("switched")}`];
+  const late =
+    plan.followUp?.incomplete === "exclude" && logEndUs !== null
+      ? [sql`WHEN enrolled_us + ${followUpUs(plan)} > ${logEndUs} THEN ${line("follow-up")}`]
+      : [];
+  const isExcluding = plan.enrolment.inTwoVariants === "exclude";
+  const analysed = line("analysed");
+  const ends = (...cases: (readonly Statement[])[]) =>
+    sql`CAST(CASE ${join([...enrolled, ...cases.flat()], "\n")} ELSE ${analysed} END AS SMALLINT)`;
   const usesEnrolment = needsEnrollingRow(layout);
   return sql`
     CREATE TEMP TABLE enrolments AS
     SELECT ${list([
       sql`unit, rows, enrolled_us, variant, switched`,
       ...layout.covariateColumns.map((c) => name(`z${c}`)),
-      sql`CAST(CASE ${join(cases, "\n")} ELSE ${line("analysed")} END AS SMALLINT) AS line`,
+      sql`${ends(isExcluding ? switchers : [], filters, late)} AS line`,
+      sql`${ends(isExcluding ? [] : switchers, filters, late)} = ${analysed} AS other_way`,
+      sql`${ends(isExcluding ? switchers : [], filters)} = ${analysed} AS any_follow_up`,
     ])}
     FROM (
       SELECT ${list([

@@ -12,4 +12,4 @@ export { brokenQuotes, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
-export { units } from "./units.ts";
+export { candidates, units } from "./units.ts";

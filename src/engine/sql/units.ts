@@ -6,15 +6,22 @@ import { daysUs, followUpUs } from "./enrolments.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /**
- * Stage 7: one row per analysed unit.
+ * Stage 7: one row per unit that is analysed, or would be under another reasonable choice.
  * Reads   rows, enrolments
- * Writes  units: variant, bucket, before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where the
- *         unit is left out; per metric counted<m>, its counted rows, numberless<m>, those of them without a number, and
- *         z<m>, its covariate, NULL where missing
+ * Writes  candidates: variant, bucket, analysed, other_way, any_follow_up, first_day (enrolled on the first local day on
+ *         which an analysed unit was), before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where
+ *         the unit is left out; per metric counted<m>, its counted rows, numberless<m>, those of them without a number,
+ *         and z<m>, its covariate, NULL where missing
  * Every unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
  * rowid: a number, where the id is text.
  */
-export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[], dialect: Dialect): Statement {
+export function candidates(
+  plan: Plan,
+  layout: Layout,
+  days: readonly Step<DayRun>[],
+  firstDay: number | null,
+  dialect: Dialect,
+): Statement {
   const analysed = unitLineIds(plan).length - 1;
   const end = plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
   const place = layout.hasTime ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END` : sql`0`;
@@ -38,6 +45,8 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
         : sql`count(*) FILTER (WHERE ${join(numberless, " OR ")}) AS ${name(`numberless${m}`)}`,
     ];
   });
+  const isFirstDay =
+    firstDay === null || !layout.hasTime ? sql`FALSE` : sql`${localDay(sql`e.enrolled_us`, days)} = ${firstDay}`;
   const values = [
     ...layout.parts.flatMap((part, p) =>
       part.side === "before" ? [] : [sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`],
@@ -48,10 +57,12 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
     ),
   ];
   return sql`
-    CREATE TEMP TABLE units AS
+    CREATE TEMP TABLE candidates AS
     SELECT ${list([
       sql`e.variant`,
       sql`${dialect.bucket(sql`e.unit`)} AS bucket`,
+      sql`e.line = ${analysed} AS analysed`,
+      sql`e.other_way, e.any_follow_up, ${isFirstDay} AS first_day`,
       sql`before_rows, after_rows, inside_rows`,
       ...values,
     ])}
@@ -68,12 +79,15 @@ export function units(plan: Plan, layout: Layout, days: readonly Step<DayRun>[],
         SELECT ${list([sql`e.rowid AS id, e.enrolled_us, ${place} AS place`, ...daysBefore(plan), sql`r.*`])}
         FROM rows AS r
         JOIN enrolments AS e ON e.unit = r.unit
-        WHERE r.fate = ${FATE.seen} AND e.line = ${analysed}
+        WHERE r.fate = ${FATE.seen} AND (e.line = ${analysed} OR e.other_way OR e.any_follow_up)
       )
       GROUP BY id
     ) AS s
     JOIN enrolments AS e ON e.rowid = s.id`;
 }
+
+/** The analysed among the candidates. */
+export const units = (): Statement => sql`CREATE TEMP VIEW units AS SELECT * FROM candidates WHERE analysed`;
 
 function counted(part: PartLayout): Statement {
   const window = part.side === "before" ? sql`place = -1 AND ${name(`b${part.metric}`)}` : sql`place = 0`;
