@@ -7,6 +7,7 @@ const value = fc.integer({ min: -1000, max: 100_000 }).map((n) => n / 100);
 const unit = fc.tuple(fc.nat(2), fc.nat(1023), value);
 const pair = fc.tuple(fc.nat(1), fc.constantFrom(0, 3, 1023), value, fc.option(value));
 
+// Nine digits: the doubles here are taken from the pivot by subtraction, which the cells are not.
 describe("sums by bucket", () => {
   it("are n, the sum and the sum of squares of the units of each bucket, and 0 where there are none", () => {
     fc.assert(
@@ -19,8 +20,8 @@ describe("sums by bucket", () => {
           for (const bucket of [0, 17, 1023, ...units.map(([, b]) => b)]) {
             const us = heldBy(units, v, bucket).map((x) => (x - Number(table.pivot)) / table.scale);
             expect(n[bucket]).toBe(us.length);
-            expect(s1[bucket]).toBeCloseTo(total(us), 12);
-            expect(s2[bucket]).toBeCloseTo(total(us.map((u) => u * u)), 12);
+            expect(s1[bucket]).toBeCloseTo(total(us), 9);
+            expect(s2[bucket]).toBeCloseTo(total(us.map((u) => u * u)), 9);
           }
         }
       }),
@@ -56,11 +57,11 @@ describe("sums by bucket", () => {
             const us = held.map(([, , y]) => (y - Number(of.pivot)) / of.scale);
             const ws = held.map(([, , , x]) => (x === null ? missing : (x - pivot) / scale));
             expect(filled.n[bucket]).toBe(held.length);
-            expect(filled.y[bucket]).toBeCloseTo(total(us), 12);
-            expect(filled.x[bucket]).toBeCloseTo(total(ws), 12);
-            expect(filled.yy[bucket]).toBeCloseTo(total(us.map((u) => u * u)), 12);
-            expect(filled.yx[bucket]).toBeCloseTo(total(us.map((u, i) => u * (ws[i] ?? 0))), 12);
-            expect(filled.xx[bucket]).toBeCloseTo(total(ws.map((w) => w * w)), 12);
+            expect(filled.y[bucket]).toBeCloseTo(total(us), 9);
+            expect(filled.x[bucket]).toBeCloseTo(total(ws), 9);
+            expect(filled.yy[bucket]).toBeCloseTo(total(us.map((u) => u * u)), 9);
+            expect(filled.yx[bucket]).toBeCloseTo(total(us.map((u, i) => u * (ws[i] ?? 0))), 9);
+            expect(filled.xx[bucket]).toBeCloseTo(total(ws.map((w) => w * w)), 9);
           }
         }
       }),

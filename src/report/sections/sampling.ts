@@ -163,7 +163,7 @@ async function figure(effect: Effect, plan: Plan, id: string): Promise<SamplingF
   );
   return {
     caption,
-    reading: `Stepped: the difference over its standard error, drawn anew from the groups\u2019 own values. Dashed: the normal curve. Dark: beyond \u2212${limit} and ${limit}, where the interval lies wholly below or wholly above the truth, by the normal curve ${percent(tail)} each; of ${count(draws)} draws, chance alone can move that by ${chanceOf(tail, draws)} points.`,
+    reading: `Stepped: the difference over its standard error, drawn anew from the groups\u2019 own values. Dashed: the normal curve. Filled: beyond \u2212${limit} and ${limit}, where the interval lies wholly below or wholly above the truth, by the normal curve ${percent(tail)} each; of ${count(draws)} draws, chance alone can move that by ${chanceOf(tail, draws)} points.`,
     drawing: await draw(
       sampling(rows, critical, (value) => fixed(value, Number.isInteger(value) ? 0 : 2)),
       `${id}-drawing`,
