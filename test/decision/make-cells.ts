@@ -1,6 +1,6 @@
 import { arms as armsOf } from "../../src/cells/index.ts";
 import type { Arm } from "../../src/cells/types.ts";
-import { adjustedPairs, type Effect, effects } from "../../src/decision/index.ts";
+import { adjustedPairs, type Effect, effects, type Pair } from "../../src/decision/index.ts";
 import type { AdjustedRequest, MetricCells, Reduction, ScoreTable } from "../../src/engine/index.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import { cellTable, type PairUnit, pairTables, scoreTable, type Unit } from "../cells/tables.ts";
@@ -34,11 +34,16 @@ function scoresOf(units: readonly PairUnit[]): Unit[] {
 /** The effects of a plan with one metric, the engine's session played by hand. */
 export async function effectsOfUnits(plan: Plan, units: readonly PairUnit[]): Promise<Effect[]> {
   const reduction = reductionOfUnits(plan, units);
+  const pairs = await pairsOfUnits(plan, reduction, units);
   const arms = plan.metrics.map((metric, m): Arm[] => {
     const cells = reduction.metrics[m];
     if (cells === undefined) throw new Error(`no cells for ${metric.name}`);
     return armsOf(metric, cells, plan.variants.length);
   });
+  return effects(plan, arms, reduction, pairs);
+}
+
+export function pairsOfUnits(plan: Plan, reduction: Reduction, units: readonly PairUnit[]): Promise<Pair[]> {
   const values = async (requests: readonly AdjustedRequest[]): Promise<ScoreTable[]> =>
     requests.map(({ control, variant, theta, pivots, meanFromPivot }) =>
       scoreTable(
@@ -50,5 +55,5 @@ export async function effectsOfUnits(plan: Plan, units: readonly PairUnit[]): Pr
           }),
       ),
     );
-  return effects(plan, arms, reduction, await adjustedPairs(plan, reduction, values));
+  return adjustedPairs(plan, reduction, values);
 }

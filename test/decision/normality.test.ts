@@ -1,13 +1,14 @@
 import { describe, expect, it } from "vitest";
+import { bucketsOf } from "../../src/decision/buckets.ts";
 import { decided } from "../../src/decision/decided.ts";
 import { contrastFigures, deciding, type Effect, otherIntervalSentence } from "../../src/decision/index.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import { generator } from "../../src/stats/generator.ts";
-import { isNotDrawn, normalUpperTail, type Resampled } from "../../src/stats/index.ts";
+import { isAbsent, isNotDrawn, normalUpperTail, type Resampled } from "../../src/stats/index.ts";
 import type { PairUnit } from "../cells/tables.ts";
 import { metricOf, planOf, variantsOf } from "../checks/make.ts";
 import { contrastOf, effectOf, FARE } from "./make.ts";
-import { effectsOfUnits } from "./make-cells.ts";
+import { effectsOfUnits, pairsOfUnits, reductionOfUnits } from "./make-cells.ts";
 
 const MEAN = metricOf({ name: "Fare", role: "primary", summary: "mean" });
 
@@ -124,6 +125,22 @@ describe("the normality of an adjusted effect", () => {
     const width = (difference.high ?? 0) - (difference.low ?? 0);
     expect(Math.abs(low - (difference.low ?? 0))).toBeLessThan(0.12 * width);
     expect(Math.abs(high - (difference.high ?? 0))).toBeLessThan(0.12 * width);
+  });
+
+  it("is drawn from the values with a missing covariate at the mean of both groups", async () => {
+    const [plan, units] = [planWith(adjusted), skewedUnits([900, 500], true)];
+    const reduction = reductionOfUnits(plan, units);
+    const [pair] = await pairsOfUnits(plan, reduction, units);
+    const [own] = reduction.metrics;
+    if (own === undefined || pair === undefined || isAbsent(pair.found)) throw new Error("not adjusted");
+    const { cells } = bucketsOf(adjusted, own, 2)?.(0, 1, pair.found) ?? {};
+    if (cells?.kind !== "adjusted") throw new Error("not drawn as adjusted");
+    const sum = (values: Float64Array) => values.reduce((a, b) => a + b, 0);
+    const having = units.flatMap(([, , , x]) => (x === null ? [] : [x]));
+    const mean = having.reduce((a, b) => a + b, 0) / having.length;
+    const all = cells.pivots[1] + (cells.scales[1] * (sum(cells.control.x) + sum(cells.variant.x))) / units.length;
+    expect(all).toBeCloseTo(mean, 9);
+    expect(sum(cells.control.n) + sum(cells.variant.n)).toBe(1400);
   });
 
   it("lets the corrected interval of the adjusted values decide where the plan says so", async () => {
