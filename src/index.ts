@@ -2,10 +2,18 @@
 import { createHash } from "node:crypto";
 import { readFile } from "node:fs/promises";
 import path from "node:path";
-import { arms } from "./cells/index.ts";
+import { type Arm, arms } from "./cells/index.ts";
 import { checks as soundnessChecks } from "./checks/index.ts";
-import { effects as allEffects, conclusion as concluded } from "./decision/index.ts";
-import { type Progress, type Reduction, reduce, UnusableLog } from "./engine/index.ts";
+import {
+  adjustedPairs,
+  effects as allEffects,
+  conclusion as concluded,
+  contrastFigures,
+  otherChoices,
+  type Pair,
+  withOrderStatistics,
+} from "./decision/index.ts";
+import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
@@ -53,15 +61,18 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   const folder = plan === null ? null : await openFolder(plan.experiment, options.out);
   if (folder !== null && "refused" in folder) return { status: 2, text: folder.refused };
   try {
-    const reduced = await reduce(plan, loaded.source, path.dirname(path.resolve(planPath)), {
-      ...options,
-      rejectsTo: folder?.staged("rejects.csv"),
-    });
-    if (plan === null || folder === null || "problems" in reduced) {
-      const problems = [...planProblems, ...("problems" in reduced ? reduced.problems : [])];
+    const found = await withReduction(
+      plan,
+      loaded.source,
+      path.dirname(path.resolve(planPath)),
+      { ...options, rejectsTo: folder?.staged("rejects.csv") },
+      measured,
+    );
+    if (plan === null || folder === null || "problems" in found) {
+      const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const rendered = await decisionReport(plan, planText, reduced.reduction);
+    const rendered = await decisionReport(plan, planText, found);
     options.signal?.throwIfAborted();
     const written = await folder.keep(rendered.files);
     const terminal = rendered.terminal({
@@ -80,16 +91,36 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   }
 }
 
-/** From counts and cells to the report's files; no file is read or written but the templates. */
-function decisionReport(plan: Plan, planText: string, reduction: Reduction): Promise<ReportFiles> {
-  const armsByMetric = plan.metrics.map((metric, m) => {
-    const cells = reduction.metrics[m];
+/** All that the report is made from, of constant size. */
+interface Measured {
+  readonly reduction: Reduction;
+  /** Per metric, per variant, both in plan order. */
+  readonly arms: readonly (readonly Arm[])[];
+  /** The adjusted arms of metrics that the plan adjusts for a covariate. */
+  readonly pairs: readonly Pair[];
+}
+
+/** While the engine still holds the units: the arms, and what only the units can tell of them. */
+async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+  const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
+  const pairs = await adjustedPairs(plan, reduction, session.adjusted);
+  return { reduction, arms, pairs };
+}
+
+function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
+  return plan.metrics.map((metric, m) => {
+    const cells = metrics[m];
     if (cells === undefined) throw new Error(`no cells for metric ${metric.name}`);
     return arms(metric, cells, plan.variants.length);
   });
-  const checks = soundnessChecks(plan, reduction);
-  const effects = allEffects(plan, armsByMetric);
-  const conclusion = concluded(plan, effects, checks, reduction, armsByMetric);
+}
+
+/** From counts, cells and arms to the report's files; no file is read or written but the templates. */
+function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
+  const effects = allEffects(plan, arms, reduction, pairs);
+  const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
+  const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
+  const choices = otherChoices(plan, reduction, arms, pairs, effects);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
-  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, conclusion });
+  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, choices, conclusion });
 }

@@ -1,115 +1,96 @@
-import type { CellTable, JointTable, MetricCells } from "../engine/types.ts";
-import { fraction, nearestNumber } from "./fraction.ts";
-import { joined, NANO } from "./sums.ts";
-import type { BucketCells, BucketSums, PairSums } from "./types.ts";
+import type { CellTable, JointTable, ScoreTable } from "../engine/types.ts";
+import { joined } from "./sums.ts";
+import type { BucketSums, PairSums } from "./types.ts";
 
-/** An engine's buckets: two bytes of md5(unit), modulo this (DESIGN 5). */
-const BUCKETS = 1024;
-const UNIT = 2 ** 120;
+/** How many there are: a unit's bucket is the first two bytes of md5 of its id, modulo this (DESIGN 5). */
+export const BUCKETS = 1024;
 
-/** One contrast by bucket, and the whole numbers that its draws are seeded by. */
-export interface Buckets {
-  readonly cells: BucketCells;
-  /** n and S_1 of both arms by bucket: another log has others, another order of its rows has not. */
-  readonly numbers: readonly (readonly bigint[])[];
+/** One in the units of an exact sum. */
+const ONE = 2 ** 120;
+
+/**
+ * n, S_1 and S_2 of one value by bucket, as doubles; a bucket without units has zeros.
+ * @param variants how many the plan has
+ * @returns index = variant in plan order; about the table's pivot and in its scale
+ */
+export function bucketSums(cells: CellTable | ScoreTable, variants: number): BucketSums[] {
+  return byBucket(cells, variants, (places) => ({
+    n: spread(places, (row) => cells.n[row] ?? 0),
+    s1: spread(places, sumOf(cells.high1, cells.low1)),
+    s2: spread(places, sumOf(cells.high2, cells.low2)),
+  }));
+}
+
+/** The same of two values and their products. */
+export function bucketPairs(cells: JointTable, variants: number): PairSums[] {
+  return byBucket(cells, variants, (places) => ({
+    n: spread(places, (row) => cells.n[row] ?? 0),
+    y: spread(places, sumOf(cells.high10, cells.low10)),
+    x: spread(places, sumOf(cells.high01, cells.low01)),
+    yy: spread(places, sumOf(cells.high20, cells.low20)),
+    yx: spread(places, sumOf(cells.high11, cells.low11)),
+    xx: spread(places, sumOf(cells.high02, cells.low02)),
+  }));
 }
 
 /**
- * One metric's cells of two variants, by bucket, as doubles: each the nearest to the exact sum.
- * @param kind `adjusted` for the contrast adjusted for its covariate: a unit without one is put at the mean of x over both
- *   arms, as the adjusted level does
+ * The pairs of all units with a y, where those without an x have `without` for it: what resampling takes of an adjusted
+ * contrast.
+ * @param pairs of the units that have both, with the pivot and the scale of y that `all` has
+ * @param without x in its scale, less its pivot
  */
-export function buckets(
-  cells: Pick<MetricCells, "metric" | "of" | "ratio" | "covariate">,
-  kind: BucketCells["kind"],
-  control: number,
-  variant: number,
-): Buckets {
-  const numbers = [control, variant].flatMap((of) => {
-    const rows = rowsOf(cells.of, of);
-    return [column(rows, (row) => BigInt(cells.of.n[row] ?? 0)), column(rows, (row) => joinedAt(cells.of, row, 1))];
-  });
-  const own = (of: number) => bucketSums(cells.of, of);
-  if (kind === "mean") return { cells: { kind, control: own(control), variant: own(variant) }, numbers };
-
-  const table = kind === "ratio" ? cells.ratio?.joint : cells.covariate?.joint;
-  if (table === undefined) throw new Error(`"${cells.metric}" came without the joint cells of a ${kind} contrast`);
-  const pairs = [control, variant].map((of) => pairSums(table, of)) as [PairSums, PairSums];
-  const [py, px] = table.pivots.map(Number) as [number, number];
-  const { scales } = table;
-  if (kind === "ratio") {
-    return { cells: { kind, pivots: [py, px], scales, control: pairs[0], variant: pairs[1] }, numbers };
-  }
-  const centre = (centreOf(table, [control, variant]) - px) / scales[1];
-  const [c, t] = [withoutCovariate(own(control), pairs[0], centre), withoutCovariate(own(variant), pairs[1], centre)];
-  return { cells: { kind, pivots: [py, px], scales, control: c, variant: t }, numbers };
-}
-
-function bucketSums(table: CellTable, variant: number): BucketSums {
-  const rows = rowsOf(table, variant);
-  return {
-    n: doubles(rows, (row) => table.n[row] ?? 0),
-    s1: doubles(rows, (row) => Number(joinedAt(table, row, 1)) / UNIT),
-    s2: doubles(rows, (row) => Number(joinedAt(table, row, 2)) / UNIT),
-  };
-}
-
-function pairSums(table: JointTable, variant: number): PairSums {
-  const rows = rowsOf(table, variant);
-  const part = (jk: "10" | "01" | "20" | "11" | "02") =>
-    doubles(rows, (row) => Number(joined(table[`high${jk}`][row] ?? 0n, table[`low${jk}`][row] ?? 0n)) / UNIT);
-  return {
-    n: doubles(rows, (row) => table.n[row] ?? 0),
-    y: part("10"),
-    x: part("01"),
-    yy: part("20"),
-    yx: part("11"),
-    xx: part("02"),
-  };
-}
-
-/** X over the units of both arms that have an x; 0 where none has. */
-function centreOf(table: JointTable, variants: readonly number[]): number {
-  const rows = table.variant.flatMap((variant, row) => (variants.includes(variant) ? [row] : []));
-  const n = rows.reduce((sum, row) => sum + (table.n[row] ?? 0), 0);
-  const total = rows.reduce((sum, row) => sum + (table.totalX[row] ?? 0n), 0n);
-  return n === 0 ? 0 : nearestNumber(fraction(total, BigInt(n) * NANO));
-}
-
-/** Adds the units without an x, which then have that of the centre. */
-function withoutCovariate(all: BucketSums, pair: PairSums, centre: number): PairSums {
-  const at = (values: Float64Array, i: number) => values[i] ?? 0;
-  const missing = all.n.map((n, i) => n - at(pair.n, i));
-  const missingY = all.s1.map((sum, i) => (at(missing, i) === 0 ? 0 : sum - at(pair.y, i)));
+export function withoutX(all: BucketSums, pairs: PairSums, without: number): PairSums {
+  const rest = (whole: Float64Array, part: Float64Array) => whole.map((sum, i) => sum - (part[i] ?? 0));
+  const [n, y] = [rest(all.n, pairs.n), rest(all.s1, pairs.y)];
+  const plus = (sums: Float64Array, more: Float64Array, factor: number) =>
+    sums.map((sum, i) => sum + factor * (more[i] ?? 0));
   return {
     n: all.n,
     y: all.s1,
-    x: pair.x.map((sum, i) => sum + centre * at(missing, i)),
+    x: plus(pairs.x, n, without),
     yy: all.s2,
-    yx: pair.yx.map((sum, i) => sum + centre * at(missingY, i)),
-    xx: pair.xx.map((sum, i) => sum + centre * centre * at(missing, i)),
+    yx: plus(pairs.yx, y, without),
+    xx: plus(pairs.xx, n, without * without),
   };
 }
 
-/** The row of each bucket that the variant has units in, at the bucket's place. */
-function rowsOf(table: Pick<CellTable, "variant" | "bucket">, variant: number): (number | undefined)[] {
-  const rows = new Array<number | undefined>(BUCKETS).fill(undefined);
-  table.variant.forEach((of, row) => {
-    const bucket = table.bucket[row] ?? 0;
-    if (bucket >= BUCKETS) throw new Error(`bucket ${bucket} of ${BUCKETS}`);
-    if (of === variant) rows[bucket] = row;
+/** Whole numbers of each variant by bucket that tell its cells from others': what draws are seeded by. */
+export function bucketNumbers(
+  cells: { readonly variant: readonly number[]; readonly bucket: readonly number[] },
+  columns: readonly (readonly (number | bigint)[])[],
+  variants: number,
+): (number | bigint)[][][] {
+  return byBucket(cells, variants, (places) =>
+    columns.map((column) => {
+      const numbers = new Array<number | bigint>(BUCKETS).fill(0);
+      for (const [bucket, row] of places) numbers[bucket] = column[row] ?? 0;
+      return numbers;
+    }),
+  );
+}
+
+type Place = readonly [bucket: number, row: number];
+
+function byBucket<Sums>(
+  cells: { readonly variant: readonly number[]; readonly bucket: readonly number[] },
+  variants: number,
+  sums: (places: readonly Place[]) => Sums,
+): Sums[] {
+  const places = Array.from({ length: variants }, (): Place[] => []);
+  cells.variant.forEach((variant, row) => {
+    const bucket = cells.bucket[row] ?? -1;
+    if (!(bucket >= 0 && bucket < BUCKETS)) throw new Error(`a cell of bucket ${bucket}, of ${BUCKETS}`);
+    places[variant]?.push([bucket, row]);
   });
-  return rows;
+  return places.map((own) => sums(own));
 }
 
-function joinedAt(table: CellTable, row: number, k: 1 | 2): bigint {
-  return joined(table[`high${k}`][row] ?? 0n, table[`low${k}`][row] ?? 0n);
+function spread(places: readonly Place[], of: (row: number) => number): Float64Array {
+  const sums = new Float64Array(BUCKETS);
+  for (const [bucket, row] of places) sums[bucket] = of(row);
+  return sums;
 }
 
-function doubles(rows: readonly (number | undefined)[], value: (row: number) => number): Float64Array {
-  return Float64Array.from(rows, (row) => (row === undefined ? 0 : value(row)));
-}
-
-function column(rows: readonly (number | undefined)[], value: (row: number) => bigint): bigint[] {
-  return rows.map((row) => (row === undefined ? 0n : value(row)));
+function sumOf(high: readonly bigint[], low: readonly bigint[]): (row: number) => number {
+  return (row) => Number(joined(high[row] ?? 0n, low[row] ?? 0n)) / ONE;
 }

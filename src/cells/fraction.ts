@@ -10,6 +10,18 @@ export function fraction(numerator: bigint, denominator: bigint): Fraction {
   return denominator < 0n ? { numerator: -numerator, denominator: -denominator } : { numerator, denominator };
 }
 
+/** A double as the fraction that it is: a whole number over a power of two. */
+export function exactly(value: number): Fraction {
+  if (!Number.isFinite(value)) throw new Error(`${value} is no fraction`);
+  let numerator = value;
+  let power = 0n;
+  while (!Number.isInteger(numerator)) {
+    numerator *= 2;
+    power += 1n;
+  }
+  return { numerator: BigInt(numerator), denominator: 1n << power };
+}
+
 /** Bits of the quotient kept before the one rounding to 53; more than 54, so that the last only says "and more". */
 const BITS = 66;
 

@@ -1,14 +1,15 @@
 // Roll-ups
-
 export { arms } from "./arms.ts";
-export { type Buckets, buckets } from "./buckets.ts";
-export { covariateArms, jointSums } from "./joint.ts";
-
+// By bucket, for resampling
+export { bucketNumbers, bucketPairs, bucketSums, withoutX } from "./buckets.ts";
+// Other choices
+export { armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "./choice-arms.ts";
 // Exact quotients
-
-export { type Fraction, fraction, nearestNumber } from "./fraction.ts";
-export { NANO } from "./sums.ts";
+export { exactly, type Fraction, fraction, nearestNumber } from "./fraction.ts";
+// Adjusted contrasts
+export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
+export { sumsOfSquares } from "./pair-ratio.ts";
+export { NANO, nanoOf } from "./sums.ts";
 
 // Types
-
-export type { Arm, BucketCells, BucketSums, CovariateArm, JointSums, PairSums, PowerSums } from "./types.ts";
+export type { Arm, BucketSums, CovariateArm, JointSums, PairSums, PowerSums } from "./types.ts";

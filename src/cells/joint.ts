@@ -1,61 +1,75 @@
 import { op, table } from "arquero";
-import type { JointTable, MetricCells } from "../engine/types.ts";
-import { partSums } from "./arms.ts";
+import type { CellTable, JointTable, ScoreTable } from "../engine/types.ts";
+import { byVariant, partSums, scoreSums } from "./roll-up.ts";
 import { joined } from "./sums.ts";
-import type { CovariateArm, JointSums } from "./types.ts";
+import type { CovariateArm, JointSums, PowerSums } from "./types.ts";
 
-const ORDERS = ["10", "01", "20", "11", "02"] as const;
-type Column = `${"high" | "low"}${(typeof ORDERS)[number]}`;
-type JointRow = { readonly variant: number; readonly n: number; readonly totalY: bigint; readonly totalX: bigint } & {
-  readonly [column in Column]: bigint;
+const COLUMNS = [
+  "n",
+  ...["high", "low"].flatMap((part) => ["10", "01", "20", "11", "02"].map((jk) => part + jk)),
+  "totalY",
+  "totalX",
+];
+/** Arquero adds bigint columns exactly. */
+const SUMS = Object.fromEntries(COLUMNS.map((column) => [column, op.sum(column)]));
+
+type JointRow = { readonly variant: number } & {
+  readonly [Column in keyof JointTable as Exclude<
+    Column,
+    "pivots" | "scales" | "variant" | "bucket"
+  >]: JointTable[Column][number];
 };
 
-/** Arquero adds bigint columns exactly. */
-const SUMS = Object.fromEntries(
-  ["n", "totalY", "totalX", ...ORDERS.flatMap((jk) => [`high${jk}`, `low${jk}`])].map((column) => [
-    column,
-    op.sum(column),
-  ]),
-);
-
 /**
- * Joint sums of two values of each unit, rolled up over buckets to one entry a variant.
- * @param variants how many the plan has; a variant without such units gets sums of n 0
+ * The joint sums of a pair of values, rolled up over buckets to one of each variant.
+ * @param variants how many the plan has; one without units gets sums of n 0
  * @returns index = variant in plan order
  */
 export function jointSums(cells: JointTable, variants: number): JointSums[] {
   const { pivots, scales, ...columns } = cells;
   const rows = table(columns).groupby("variant").rollup(SUMS).objects() as JointRow[];
-  const found = new Map(rows.map((row) => [row.variant, row]));
-  return Array.from({ length: variants }, (_, variant) => {
-    const row = found.get(variant);
-    const sum = (jk: (typeof ORDERS)[number]) => (row === undefined ? 0n : joined(row[`high${jk}`], row[`low${jk}`]));
-    return {
-      n: row?.n ?? 0,
-      pivots,
-      scales,
-      s10: sum("10"),
-      s01: sum("01"),
-      s20: sum("20"),
-      s11: sum("11"),
-      s02: sum("02"),
-      totals: [row?.totalY ?? 0n, row?.totalX ?? 0n],
-    };
+  const none = { n: 0, s10: 0n, s01: 0n, s20: 0n, s11: 0n, s02: 0n, totals: [0n, 0n] as const };
+  return byVariant<JointRow, JointSums>(rows, variants, { pivots, scales, ...none }, (row) => ({
+    n: row.n,
+    pivots,
+    scales,
+    s10: joined(row.high10, row.low10),
+    s01: joined(row.high01, row.low01),
+    s20: joined(row.high20, row.low20),
+    s11: joined(row.high11, row.low11),
+    s02: joined(row.high02, row.low02),
+    totals: [row.totalY, row.totalX],
+  }));
+}
+
+/**
+ * The arms of a metric with its covariate, one of each variant in plan order.
+ * @param of y over all units with a value, x over those of them that have one
+ */
+export function covariateArms(
+  of: CellTable,
+  covariate: { readonly x: CellTable; readonly joint: JointTable },
+  variants: number,
+): CovariateArm[] {
+  const xs = partSums(covariate.x, variants);
+  const joints = jointSums(covariate.joint, variants);
+  return partSums(of, variants).map((value, v) => {
+    const [x, joint] = [xs[v], joints[v]];
+    if (x === undefined || joint === undefined) throw new Error(`no covariate of variant ${v} among ${variants}`);
+    return { value, covariate: x, joint };
   });
 }
 
-/** The arms of a metric that the plan adjusts for a covariate; index = variant in plan order. */
-export function covariateArms(
-  cells: Pick<MetricCells, "metric" | "of" | "covariate">,
-  variants: number,
-): CovariateArm[] {
-  if (cells.covariate === null) throw new Error(`"${cells.metric}" came without the cells of its covariate`);
-  const values = partSums(cells.of, variants);
-  const covariates = partSums(cells.covariate.x, variants);
-  return jointSums(cells.covariate.joint, variants).map((joint, variant) => {
-    const [value, covariate] = [values[variant], covariates[variant]];
-    if (value === undefined || covariate === undefined)
-      throw new Error(`no sums of variant ${variant} among ${variants}`);
-    return { value, covariate, joint };
-  });
+/**
+ * The sums of adjusted values y - theta (x - X), from the cells of d = (y - pivot) - theta (x - X).
+ * @returns index = variant in plan order; of variants that are no part of the contrast n 0
+ */
+export function adjustedSums(cells: ScoreTable, pivot: string, variants: number): PowerSums[] {
+  const seen = (end: number | null) => (end === null ? null : Number(pivot) + end);
+  return scoreSums(cells, variants).map((sums) => ({
+    ...sums,
+    pivot,
+    smallest: seen(sums.smallest),
+    largest: seen(sums.largest),
+  }));
 }

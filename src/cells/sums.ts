@@ -3,6 +3,13 @@ import type { PowerSums } from "./types.ts";
 /** A unit of decimals in the engine's tables, 10^-9 of the metric's unit, as a divisor. */
 export const NANO = 1_000_000_000n;
 
+/** Exact decimal text of up to 9 places, such as a pivot, in 10^-9. */
+export function nanoOf(text: string): bigint {
+  const [whole = "", places = ""] = text.split(".");
+  if (!/^-?\d+$/.test(whole) || !/^\d{0,9}$/.test(places)) throw new Error(`${text} is no decimal of up to 9 places`);
+  return BigInt(whole + places.padEnd(9, "0"));
+}
+
 /** The sums of one kind of cells over some rows, as the roll-up gives them. */
 export interface SumsRow {
   readonly n: number;
@@ -26,7 +33,7 @@ export function powers(row: SumsRow): PowerSums["powers"] {
   ];
 }
 
-/** A sum of terms kept in two integers, in units of 2^-120. */
+/** high 2^-60 + low 2^-120, in units of 2^-120. */
 export function joined(high: bigint, low: bigint): bigint {
   return (high << 60n) + low;
 }

@@ -1,3 +1,5 @@
+import type { Fraction } from "./fraction.ts";
+
 /**
  * Exact power sums of one group of units: n and S_k, k = 1..4, the sum of u^k with u = (x - pivot) / scale.
  * Groups with the same pivot and scale are merged by adding.
@@ -26,7 +28,45 @@ export type Arm =
       readonly denominator: PowerSums;
       /** Of d = (a - R b) / mean(b); null when the arm has no unit or its denominators sum to 0. */
       readonly score: PowerSums | null;
+      /** Of (numerator, denominator); without it the denominator's part in the standard error comes from the score. */
+      readonly joint?: JointSums | null;
+    }
+  | {
+      readonly kind: "quantile";
+      readonly sums: PowerSums;
+      /** Which, a plain decimal in (0, 1) as the plan's text has it. */
+      readonly q: string;
+      /** Values by rank, 1 the smallest, in 10^-9 of the metric's unit: those that the arm's contrasts ask for. */
+      readonly ordered: ReadonlyMap<number, bigint>;
+    }
+  | {
+      /** Of an adjusted contrast: the units' values are y - theta (x - X) (METHODS 1). */
+      readonly kind: "adjusted";
+      readonly summary: "mean" | "proportion";
+      /** Their mean, exact for that theta. */
+      readonly mean: Fraction;
+      /** Their sums; no exact total, for they are computed in doubles. */
+      readonly sums: PowerSums;
+      /** How far a value can be off by that, in the metric's unit. */
+      readonly noise: number;
     };
+
+/** Sums of one value by bucket: n and the first two power sums about any one pivot, in any one scale. Arrays of one length. */
+export interface BucketSums {
+  readonly n: Float64Array;
+  readonly s1: Float64Array;
+  readonly s2: Float64Array;
+}
+
+/** Sums of two values (y, x) of the same units by bucket, each about a pivot and in a scale. Arrays of one length. */
+export interface PairSums {
+  readonly n: Float64Array;
+  readonly y: Float64Array;
+  readonly x: Float64Array;
+  readonly yy: Float64Array;
+  readonly yx: Float64Array;
+  readonly xx: Float64Array;
+}
 
 /**
  * Exact joint sums of two values (y, x) over the units of an arm that have both: S_jk is the sum of u^j w^k, u = (y - pivot)

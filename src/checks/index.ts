@@ -1,32 +1,42 @@
 import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { allocation } from "./allocation.ts";
+import { balance } from "./balance.ts";
 import { duplicates } from "./duplicates.ts";
 import { filters } from "./filters.ts";
 import { followUp } from "./follow-up.ts";
 import { neverOccurs } from "./never-occurs.ts";
+import { normality } from "./normality.ts";
+import { oneUnit } from "./one-unit.ts";
 import { rejected } from "./rejected.ts";
 import { switched } from "./switched.ts";
-import type { Check } from "./types.ts";
+import type { Check, ContrastFigures } from "./types.ts";
 import { unknownVariants } from "./unknown-variants.ts";
 import { withoutRows } from "./without-rows.ts";
 
-export type { Check, CheckOutcome, CheckPart, Figure } from "./types.ts";
+export { tailsInWords } from "./normality.ts";
+export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";
 
 /** Every soundness check, in the order of METHODS 7. A check that does not apply gives null. */
-const CHECKS: readonly ((plan: Plan, reduction: Reduction) => Check | null)[] = [
+const CHECKS: readonly ((plan: Plan, reduction: Reduction, contrasts: readonly ContrastFigures[]) => Check | null)[] = [
   allocation,
   rejected,
   duplicates,
   switched,
   unknownVariants,
   followUp,
+  balance,
   filters,
   neverOccurs,
+  oneUnit,
+  normality,
   withoutRows,
 ];
 
-/** Tests of the data, not of the effect. Those that do not apply, or cannot be computed, are not in the list. */
-export function checks(plan: Plan, reduction: Reduction): Check[] {
-  return CHECKS.map((check) => check(plan, reduction)).filter((check) => check !== null);
+/**
+ * Tests of the data, not of the effect. Those that do not apply, or cannot be computed, are not in the list.
+ * @param contrasts one a metric and variant; without them nothing is said of the normal approximation
+ */
+export function checks(plan: Plan, reduction: Reduction, contrasts: readonly ContrastFigures[] = []): Check[] {
+  return CHECKS.map((check) => check(plan, reduction, contrasts)).filter((check) => check !== null);
 }

@@ -1,3 +1,5 @@
+import type { Method, Normality } from "../stats/index.ts";
+
 export type CheckOutcome = "pass" | "caution" | "fail";
 
 /** A figure of a check: anything JSON holds, never NaN or undefined. */
@@ -20,4 +22,14 @@ export interface CheckPart {
   readonly result: CheckOutcome;
   readonly sentence: string;
   readonly figures: { readonly [name: string]: Figure };
+}
+
+/** What the checks look at of the contrast that decides of one metric and variant: whoever compared the arms hands it over. */
+export interface ContrastFigures {
+  readonly metric: string;
+  readonly variant: string;
+  readonly control: string;
+  /** The method that counts. */
+  readonly method: Method;
+  readonly normality: Normality | null;
 }

@@ -21,8 +21,12 @@ export function because(reason: Absent["absent"], one: string, many: string): st
       return `too many ${many} have the very same value for an interval to have a width`;
     case "same-covariate":
       return `what it would be adjusted for is the same for every ${one} of a group`;
+    case "no-covariate":
+      return `no ${one} has a value of what it would be adjusted for`;
     case "no-expected-effect":
       return "the plan expects no effect larger than the one that is asked for";
+    case "not-for-quantiles":
+      return "it is not computed for quantiles";
     case "not-built":
       return "this version does not compute it";
     default:

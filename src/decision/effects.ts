@@ -1,30 +1,124 @@
 import type { Arm } from "../cells/types.ts";
+import type { MetricCells, Reduction } from "../engine/types.ts";
 import type { Metric, Plan, Variant } from "../plan/types.ts";
-import { bonferroniP, contrast } from "../stats/index.ts";
+import { isAbsent } from "../stats/index.ts";
+import { withAdjusted, withPlainP } from "./adjusted.ts";
+import { bucketsOf } from "./buckets.ts";
+import { type Compared, comparedContrast, comparedPair } from "./compared.ts";
+import { type Pair, pairOf } from "./covariates.ts";
+import { criticalOf, pOfVariants, type Variances, variancesOf, variancesOfPairs } from "./critical.ts";
+import { withFamilies } from "./families.ts";
+import { withNormality } from "./normality.ts";
+import { analysedUnits, NO_POWER, withPower } from "./power.ts";
 import type { Effect } from "./types.ts";
 import { placed } from "./zones.ts";
 
 /**
- * Every metric x every variant against the control, in plan order, with its zone.
+ * Every metric x every variant against the control, in plan order, with its zone, its adjusted p and its power.
  *
- * What decides (primaries, guardrails) is held at alpha / k for k variants against one control, Bonferroni, so that all
- * their intervals hold at once; secondary metrics at alpha, pointwise. Source: Dunn 1961, JASA 56, 52-64.
+ * What decides (primaries, guardrails) has intervals that hold for all variants at once; secondary metrics have
+ * pointwise ones.
  * @param arms per metric, per variant, both in plan order
+ * @param pairs the adjusted arms of metrics that the plan adjusts
  */
-export function effects(plan: Plan, arms: readonly (readonly Arm[])[]): Effect[] {
-  const control = plan.variants.findIndex((variant) => variant.isControl);
-  return plan.metrics.flatMap((metric, m) =>
-    plan.variants.flatMap((variant, v) =>
-      v === control ? [] : [effect(plan, metric, variant, arm(arms, m, control), arm(arms, m, v))],
-    ),
+export function effects(
+  plan: Plan,
+  arms: readonly (readonly Arm[])[],
+  reduction: Reduction,
+  pairs: readonly Pair[] = [],
+): Effect[] {
+  const units = analysedUnits(reduction);
+  const found = plan.metrics.map((metric, m) => contrasts(plan, metric, m, arms, pairs, cellsOf(reduction, m), units));
+  const plain = withFamilies(
+    plan,
+    found.flatMap((metric) => metric.plain),
   );
+  const deciding = withFamilies(
+    plan,
+    found.flatMap((metric) => metric.deciding),
+  );
+  return withPlainP(deciding, plain).map((effect) => withPower(effect, plan, units));
 }
 
-function effect(plan: Plan, metric: Metric, variant: Variant, control: Arm, treated: Arm): Effect {
-  const variants = plan.variants.length - 1;
-  const decides = metric.role !== "secondary";
-  const alpha = 1 - plan.decision.confidence;
-  const found = contrast(control, treated, decides ? alpha / variants : alpha);
+/** The effects of one metric, unadjusted and with what the plan adjusts for. */
+function contrasts(
+  plan: Plan,
+  metric: Metric,
+  m: number,
+  arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
+  cells: MetricCells,
+  units: number,
+): { readonly plain: readonly Effect[]; readonly deciding: readonly Effect[] } {
+  const c = indexOfControl(plan);
+  const buckets = bucketsOf(metric, cells, plan.variants.length);
+  const others = plan.variants.flatMap((variant, v) =>
+    v === c
+      ? []
+      : [
+          {
+            variant,
+            compared: { control: arm(arms, m, c), variant: arm(arms, m, v), buckets: buckets?.(c, v, false) ?? null },
+            pair: comparedPair(pairOf(pairs, m, c, v), buckets, c, v),
+          },
+        ],
+  );
+  const variances = decidingVariances(plan, m, arms, []);
+  const critical = criticalOf(plan, metric, variances);
+  const plain = others.map(({ variant, compared }) => effect(plan, metric, variant, compared, variances, critical));
+  const found = others.map(({ pair }) => pair);
+  const ofPairs = metric.adjustFor === null ? variances : decidingVariances(plan, m, arms, pairs);
+  const criticalOfPairs = metric.adjustFor === null ? critical : criticalOf(plan, metric, ofPairs);
+  const deciding = withAdjusted(plan, metric, plain, found, ofPairs, criticalOfPairs);
+  return {
+    plain,
+    deciding: deciding.map((effect, i) => {
+      const { compared, pair } = others[i] ?? {};
+      const own = effect.adjusted === null || pair == null || isAbsent(pair) ? compared : pair;
+      if (own === undefined) throw new Error(`${deciding.length} effects of ${others.length} variants`);
+      return withNormality(effect, plan, own, effect.adjusted === null ? critical : criticalOfPairs, units);
+    }),
+  };
+}
+
+function cellsOf({ metrics }: Reduction, m: number): MetricCells {
+  const cells = metrics[m];
+  if (cells === undefined) throw new Error(`no cells for metric ${m}, of ${metrics.length}`);
+  return cells;
+}
+
+/** The variances of the levels that the contrasts of metric m compare, adjusted where there are adjusted arms. */
+export function decidingVariances(
+  plan: Plan,
+  m: number,
+  arms: readonly (readonly Arm[])[],
+  pairs: readonly Pair[],
+): Variances {
+  const c = indexOfControl(plan);
+  const control = arm(arms, m, c);
+  const others = plan.variants.flatMap((_, v) =>
+    v === c ? [] : [{ variant: arm(arms, m, v), pair: pairOf(pairs, m, c, v) }],
+  );
+  const compared = others.map(({ variant, pair }) =>
+    pair === null || isAbsent(pair) ? { control, variant } : { control: pair.control.arm, variant: pair.variant.arm },
+  );
+  return compared.every((pair) => pair.control === control)
+    ? variancesOf(
+        control,
+        others.map(({ variant }) => variant),
+      )
+    : variancesOfPairs(compared);
+}
+
+function effect(
+  plan: Plan,
+  metric: Metric,
+  variant: Variant,
+  compared: Compared,
+  variances: Variances,
+  critical: number,
+): Effect {
+  const found = comparedContrast(plan, compared, critical);
   const { p } = found.difference;
   return {
     metric: metric.name,
@@ -33,9 +127,19 @@ function effect(plan: Plan, metric: Metric, variant: Variant, control: Arm, trea
     variant: variant.name,
     control: controlOf(plan).name,
     contrast: found,
-    pAdjusted: decides && p !== null ? bonferroniP(p, variants) : null,
+    pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),
+    pHolm: null,
+    adjusted: null,
+    notAdjusted: null,
     ...placed(metric, found),
+    power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
+}
+
+function indexOfControl(plan: Plan): number {
+  return plan.variants.indexOf(controlOf(plan));
 }
 
 export function controlOf(plan: Plan): Variant {

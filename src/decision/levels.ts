@@ -1,11 +1,15 @@
 import type { Metric, Plan } from "../plan/types.ts";
-import { alike, quoted, rates } from "../words/index.ts";
+import { alike, percentile, quoted, rates } from "../words/index.ts";
+import { deciding } from "./deciding.ts";
 import { counts, measure, metricOf } from "./measure.ts";
 import type { Effect } from "./types.ts";
 
-/** '13.2 of 100 visitors with "calendar" and 12.0 with "list"'; null when an arm has no figure. */
+/**
+ * '13.2 of 100 visitors with "calendar" and 12.0 with "list"', 'the 95th percentile was 3.12 s with "calendar" and 3.05 s
+ * with "list"'; null when an arm has no figure.
+ */
 export function levelsInWords(effect: Effect, plan: Plan): string | null {
-  const { control, variant } = effect.contrast;
+  const { control, variant } = deciding(effect);
   if (control.mean === null || variant.mean === null) return null;
   const metric = metricOf(effect, plan);
   // beside a difference per unit stand levels per unit
@@ -31,6 +35,10 @@ function written(
   }
   const [first = "", second = ""] = alike([variant, control]);
   const unit = metric.unitOfMeasure === null ? "" : ` ${metric.unitOfMeasure}`;
+  if (metric.quantile !== null) {
+    const of = metric.withoutRows === "leave-out" ? `of ${many} ` : "";
+    return { first: `${of}the ${percentile(metric.quantile)} was ${first}${unit}`, second: second + unit };
+  }
   if (counts(metric)) return { first: `${first}${unit} per ${one}`, second: second + unit };
   return { first: first + unit, second: second + unit };
 }

@@ -1,5 +1,6 @@
 import type { Amount, Metric, Plan } from "../plan/types.ts";
 import { type Comparative, HIGHER, type Interval, MORE, plain, planPercent, type Scale } from "../words/index.ts";
+import { deciding } from "./deciding.ts";
 import type { Effect } from "./types.ts";
 import { ruleOf } from "./zones.ts";
 
@@ -20,7 +21,7 @@ export interface Measure {
 export function measure(effect: Effect, plan: Plan): Measure {
   const metric = metricOf(effect, plan);
   const rule = ruleOf(metric);
-  const { relative } = effect.contrast;
+  const { relative } = deciding(effect);
   const marks = rule === null ? [] : [signedRule(metric, rule)];
   if (rule?.kind !== "absolute" && !("absent" in relative)) {
     return { interval: relative, scale: { kind: "percent" }, words: comparative(metric, "percent"), marks };
@@ -30,7 +31,7 @@ export function measure(effect: Effect, plan: Plan): Measure {
 
 /** The difference itself, in points of a proportion or in the metric's unit of measure. */
 export function absolute(effect: Effect, metric: Metric): Measure {
-  const { estimate, low, high } = effect.contrast.difference;
+  const { estimate, low, high } = deciding(effect).difference;
   const scale = absoluteScale(metric);
   const interval = estimate === null ? null : { estimate, low, high };
   return { interval, scale, words: comparative(metric, scale.kind), marks: [] };

@@ -2,11 +2,13 @@ import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { count, endSize, list, plural, quoted } from "../words/index.ts";
 import { controlOf } from "./effects.ts";
-import { amountText, measure } from "./measure.ts";
+import { measure } from "./measure.ts";
+import { enrolledADay, plannedADay } from "./next-test.ts";
+import { analysedUnits } from "./power.ts";
+import { whatWouldSettle } from "./settle.ts";
 import { intervalLabel } from "./told.ts";
 import type { Conclusion, Effect } from "./types.ts";
 import { absoluteSentence } from "./words.ts";
-import { ruleOf } from "./zones.ts";
 
 /** What page one says after the reasons: what the effect amounts to, or what is missing and what to do now. */
 export function nextSentences(
@@ -26,7 +28,7 @@ export function nextSentences(
       return [
         ...notProven(plan, effects),
         whyNotSettled(plan, reduction),
-        whatWouldSettle(plan),
+        whatWouldSettle(plan, effects, reduction),
         'Adding days to this test now and looking again would make a false "adopt" more likely: plan the looks first.',
         untilThen(plan),
       ];
@@ -52,26 +54,25 @@ export function notProven(plan: Plan, effects: readonly Effect[]): string[] {
   return [`This is not proof that nothing changed.${unlikely}`];
 }
 
-/** "Why: 42,828 visitors were counted; the plan asked for 100,000." */
+/** "Why: 42,828 visitors were counted; the plan asked for 100,000. They enrolled at 3,060 a day instead of 7,140." */
 export function whyNotSettled(plan: Plan, reduction: Reduction): string {
-  const counted = reduction.unitLines.find((line) => line.id === "analysed")?.units ?? 0;
+  const counted = analysedUnits(reduction);
   const { one, many } = plan.unitCalled;
   const were = `Why: ${plural(counted, one, many)} ${counted === 1 ? "was" : "were"} counted`;
   if (plan.plannedUnits !== null && counted < plan.plannedUnits) {
-    return `${were}; the plan asked for ${count(plan.plannedUnits)}.`;
+    return `${were}; the plan asked for ${count(plan.plannedUnits)}.${paceSentence(plan, reduction)}`;
   }
   const asPlanned = plan.plannedUnits === null ? "" : `, as many as the plan asked for (${count(plan.plannedUnits)})`;
   return `${were}${asPlanned}; with so many the intervals are still too wide for the plan's rule.`;
 }
 
-/** Without a number of units: sizing is a later part of the report. */
-export function whatWouldSettle(plan: Plan): string {
-  const amounts = plan.metrics.flatMap((metric) => {
-    const rule = ruleOf(metric);
-    return rule === null ? [] : [`${amountText(metric, rule)} of ${metric.name}`];
-  });
-  const sized = amounts.length === 0 ? "" : `, sized beforehand for ${list(amounts)}`;
-  return `What would settle it: a new test with more ${plan.unitCalled.many}${sized}.`;
+const SLOWER = 0.95; // ours: a pace nearer than this to the planned one explains nothing
+
+function paceSentence(plan: Plan, reduction: Reduction): string {
+  const [ran, planned] = [enrolledADay(reduction), plannedADay(plan)];
+  if (ran === null || planned === null || ran > SLOWER * planned) return "";
+  const [slow, fast] = [ran, planned].map((pace) => count(Math.round(Number(pace.toPrecision(3)))));
+  return ran < 1 ? "" : ` They enrolled at ${slow} a day instead of ${fast}.`;
 }
 
 /** 'Until then: stay with "list", unless there are other reasons for "calendar".' */

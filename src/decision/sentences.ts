@@ -1,7 +1,7 @@
 import type { Plan } from "../plan/types.ts";
 import { list, quoted } from "../words/index.ts";
 import { controlOf } from "./effects.ts";
-import { isEnough, isRuledOut, type Verdict } from "./rule.ts";
+import { anyIsEnough, isEnough, primariesPass, ruledOutBy, type Verdict } from "./rule.ts";
 import { type Told, told } from "./told.ts";
 import type { Effect, Zone } from "./types.ts";
 import { notRuledOut } from "./words.ts";
@@ -9,14 +9,30 @@ import { notRuledOut } from "./words.ts";
 // Variants are named in quotes and without an article: names are arbitrary text, and "Adopt no banner." or "Adopt the B."
 // would not read; a quoted name always does.
 
-export function adoptSentence(variant: string): string {
-  return `Adopt ${quoted(variant)}.`;
+/** Where any one primary is enough also which of them it was. */
+export function adoptSentence(plan: Plan, { variant, primaries }: Verdict): string {
+  const adopt = `Adopt ${quoted(variant)}.`;
+  if (!anyIsEnough(plan)) return adopt;
+  const passed = enough(plan, primaries).map(({ metric }) => metric);
+  const others = primaries.map(({ metric }) => metric).filter((metric) => !passed.includes(metric));
+  if (others.length === 0) return adopt;
+  const asked = list(primaries.map(({ metric }) => metric));
+  return `${adopt} The plan asks for one of ${asked}: ${list(passed)} passed, and ${list(others, "or")} is not shown to be worse.`;
 }
 
-/** Several variants passed: which, and that the one adopted did best on the first primary, or stands first in the plan. */
-export function alsoPassed(best: string, others: readonly string[], metric: string, tie: boolean): string {
+/**
+ * Several variants passed: which, and that the one adopted did best on the first primary, or stands first in the plan.
+ * @param compared whether the best two differ on the first primary; `null` where that has no estimate
+ */
+export function alsoPassed(
+  best: string,
+  others: readonly string[],
+  metric: string,
+  compared: "differ" | "tie" | null,
+): string {
   const passed = `${list(others.map(quoted))} passed too`;
-  return tie
+  if (compared === null) return `${passed}; ${quoted(best)} stands first in the plan.`;
+  return compared === "tie"
     ? `${passed}, and no less well on ${metric}; ${quoted(best)} stands first in the plan.`
     : `${passed}; ${quoted(best)} did best on ${metric}.`;
 }
@@ -50,13 +66,13 @@ export function notSettledSentence(plan: Plan, verdicts: readonly Verdict[]): st
   return `Not settled: this test can neither recommend ${names} nor advise against ${open.length === 1 ? "it" : "them"}.${rest}`;
 }
 
-/** One sentence on what blocks a variant: a primary that is ruled out, else a guardrail beyond its limit. */
+/** What blocks a variant: the primaries that rule it out, else a guardrail beyond its limit. */
 function ruledOutSentence(plan: Plan, { primaries, guardrails }: Verdict): string {
-  const primary = primaries.find(isRuledOut);
-  if (primary !== undefined) return fromTable(RULED_OUT, primary, plan);
+  const out = ruledOutBy(plan, primaries);
+  if (out.length > 0) return out.map((primary) => fromTable(RULED_OUT, primary, plan)).join(" ");
   const guardrail = guardrails.find(({ zone }) => zone === "beyond");
   if (guardrail === undefined) throw new Error("a variant is blocked, and by nothing");
-  const passed = primaries.every((effect) => isEnough(plan, effect)) ? `${wereBetter(primaries)}, but ` : "";
+  const passed = primariesPass(plan, primaries) ? `${wereBetter(enough(plan, primaries))}, but ` : "";
   return passed + fromTable(RULED_OUT, guardrail, plan);
 }
 
@@ -64,17 +80,22 @@ function ruledOutSentence(plan: Plan, { primaries, guardrails }: Verdict): strin
 function stillMissing(plan: Plan, { variant, primaries, guardrails }: Verdict): string | null {
   const open = guardrails.filter(({ zone }) => zone === "not-settled");
   const [guardrail] = open;
-  const better = `${wereBetter(primaries)} with ${quoted(variant)}, but `;
-  if (guardrail !== undefined && primaries.every((effect) => isEnough(plan, effect))) {
-    return `${better}${notRuledOut(guardrail, plan)}${intervalOf(guardrail, plan)}.`;
+  const but = (better: readonly Effect[]) => `${wereBetter(better)} with ${quoted(variant)}, but `;
+  if (guardrail !== undefined && primariesPass(plan, primaries)) {
+    return `${but(enough(plan, primaries))}${notRuledOut(guardrail, plan)}${intervalOf(guardrail, plan)}.`;
   }
-  const unproven = primaries.find((effect) => effect.zone === "better" && !isEnough(plan, effect));
-  const allBetter = primaries.every(({ zone }) => zone === "better" || zone === "worthwhile");
-  if (unproven === undefined || !allBetter || open.length > 0) return null;
+  const better = primaries.filter(({ zone }) => zone === "better" || zone === "worthwhile");
+  const unproven = better.find((effect) => !isEnough(plan, effect));
+  const pointToIt = anyIsEnough(plan) || better.length === primaries.length;
+  if (unproven === undefined || !pointToIt || open.length > 0) return null;
   const amount = told(unproven, plan)?.amount ?? "";
   return amount === ""
-    ? `${better}the plan adopts only on a gain it calls worthwhile, and states none for ${unproven.metric}.`
-    : `${better}a gain of ${amount} is not proven${intervalOf(unproven, plan)}.`;
+    ? `${but(better)}the plan adopts only on a gain it calls worthwhile, and states none for ${unproven.metric}.`
+    : `${but(better)}a gain of ${amount} is not proven${intervalOf(unproven, plan)}.`;
+}
+
+function enough(plan: Plan, primaries: readonly Effect[]): Effect[] {
+  return primaries.filter((effect) => isEnough(plan, effect));
 }
 
 type Sentences = { readonly [zone in Zone]?: (texts: Told, effect: Effect) => string };

@@ -9,6 +9,7 @@ import {
   quoted,
 } from "../words/index.ts";
 import { because } from "./absent.ts";
+import { deciding } from "./deciding.ts";
 import { amountText, measure, metricOf, ruleInWords } from "./measure.ts";
 import type { Effect } from "./types.ts";
 import { ruleOf } from "./zones.ts";
@@ -67,7 +68,7 @@ export function intervalLabel(plan: Plan): string {
 /** Why there is no interval, or none that the rule can be held against; null where there is. To follow "since". */
 export function unmeasured(effect: Effect, plan: Plan): string | null {
   const { one, many } = plan.unitCalled;
-  const { difference, relative, why } = effect.contrast;
+  const { difference, relative, why } = deciding(effect);
   if (difference.estimate === null || (difference.low === null && difference.high === null)) {
     return because(why?.absent ?? "not-built", one, many);
   }

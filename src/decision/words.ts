@@ -1,6 +1,8 @@
 import type { Plan } from "../plan/types.ts";
 import { count, estimateInWords, type Interval, intervalInWords, MORE, quoted, type Scale } from "../words/index.ts";
 import { because } from "./absent.ts";
+import { adjustedSentence } from "./adjusted-words.ts";
+import { deciding } from "./deciding.ts";
 import { levelsInWords } from "./levels.ts";
 import { absolute, amountText, counts, measure, metricOf, ruleInWords } from "./measure.ts";
 import { intervalLabel, told, unmeasured } from "./told.ts";
@@ -13,17 +15,23 @@ export function effectSentence(effect: Effect, plan: Plan): string {
   const texts = told(effect, plan);
   const { one, many } = plan.unitCalled;
   if (texts !== null && levels !== null) {
-    return `${effect.metric}: ${levels}, ${texts.found}.${withoutRelative(effect, plan)}`;
+    return `${effect.metric}: ${levels}, ${texts.found}.${withoutRelative(effect, plan)}${afterwards(effect, plan)}`;
   }
-  const reason = because(effect.contrast.why?.absent ?? "not-built", one, many);
+  const reason = because(deciding(effect).why?.absent ?? "not-built", one, many);
   return levels === null
     ? `${effect.metric}: nothing can be compared, since ${reason}.`
     : `${effect.metric}: ${levels}. No interval can be given, since ${reason}.`;
 }
 
+/** Whether the figures are adjusted, as a sentence to follow them. */
+function afterwards(effect: Effect, plan: Plan): string {
+  const sentence = adjustedSentence(effect, plan);
+  return sentence === "" ? "" : ` ${sentence}`;
+}
+
 /** Said where a share of the control's level was wanted and does not exist. */
 function withoutRelative(effect: Effect, plan: Plan): string {
-  const { relative } = effect.contrast;
+  const { relative } = deciding(effect);
   if (ruleOf(metricOf(effect, plan))?.kind === "absolute" || !("absent" in relative)) return "";
   return ` No percentage is given, since ${because(relative.absent, plan.unitCalled.one, plan.unitCalled.many)}.`;
 }
@@ -35,7 +43,7 @@ export function guardrailSentence(effect: Effect, plan: Plan): string {
   const limit = rule === null ? "" : `, limit ${ruleInWords(metric, rule)}`;
   const texts = told(effect, plan);
   const reason = unmeasured(effect, plan);
-  const found = texts === null ? "" : ` Found with ${texts.variant}: ${texts.found}.`;
+  const found = texts === null ? "" : ` Found with ${texts.variant}: ${texts.found}.${afterwards(effect, plan)}`;
   return `Must not get worse: ${effect.metric}${limit}.${found} ${verdict()}`;
 
   function verdict(): string {

@@ -17,7 +17,7 @@ export interface Placed {
  * Where a contrast's interval lies against the metric's rule (METHODS 2). Signs are turned so that more is better; a
  * relative worthwhile effect or margin is held against the relative interval, everything else against the difference's.
  */
-export function placed(metric: Metric, contrast: Contrast): Placed {
+export function placed(metric: Metric, contrast: Pick<Contrast, "difference" | "relative">): Placed {
   const rule = ruleOf(metric);
   const ends = turned(metric, heldAgainst(rule, contrast));
   const size = rule?.value ?? 0;
@@ -57,7 +57,7 @@ export function turned(metric: Pick<Metric, "goodIs">, { low, high }: Ends): End
   return { low: high === null ? null : -high, high: low === null ? null : -low };
 }
 
-function heldAgainst(rule: Amount | null, contrast: Contrast): Ends {
+function heldAgainst(rule: Amount | null, contrast: Pick<Contrast, "difference" | "relative">): Ends {
   if (rule?.kind !== "relative") return contrast.difference;
   return "absent" in contrast.relative ? { low: null, high: null } : contrast.relative;
 }

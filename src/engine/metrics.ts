@@ -1,12 +1,14 @@
 import type { Plan } from "../plan/index.ts";
 import { capValue } from "./caps.ts";
 import { choiceCells } from "./choices.ts";
+import { endsOfArms } from "./ends.ts";
 import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
+import type { MeasuredMetric } from "./measuredMetric.ts";
 import { scoreTables } from "./scores.ts";
-import { capped, countedRows, type Dialect, leftOut, name, pairsAtEnds, type Statement, sql } from "./sql/index.ts";
-import { decimalMeasures, decimalTables, jointTables } from "./tables.ts";
-import type { CellTable, MetricCells, UnitEnds } from "./types.ts";
+import { capped, countedRows, type Dialect, leftOut, name, type Statement, sql } from "./sql/index.ts";
+import { type DecimalMeasure, decimalMeasures, decimalTables, jointTables } from "./tables.ts";
+import type { CellTable, MetricCells } from "./types.ts";
 
 /** A metric's values over a row of `candidates`. */
 export interface MetricValue {
@@ -56,23 +58,34 @@ export async function metricCells(
   const all = [...values.map(({ value }) => value), ...partners.map(({ x }) => x)];
   const measures = await decimalMeasures(all, sql`units`, engine, dialect);
   const tables = await decimalTables(measures, engine);
-  const pairs = partners.flatMap(({ m }, i) => {
-    const [y, x] = [measures[m], measures[values.length + i]];
-    return y === undefined || x === undefined ? [] : [[y, x] as const];
-  });
+  const pairs = partners.map(({ m }, i) => ({
+    y: measureOf(measures, m),
+    x: measureOf(measures, values.length + i),
+    ofY: tableOf(tables, m),
+    ofX: tableOf(tables, values.length + i),
+  }));
   const joints = await jointTables(pairs, engine);
   const ratios = values.flatMap(({ value, per }, m) => (per === null ? [] : [{ m, a: value, b: per }]));
   const scores = await scoreTables(plan, ratios, engine, dialect);
-  const choices = await choiceCells(
+  const measured = plan.metrics.map((metric, m): MeasuredMetric => {
+    const partner = partners.findIndex((one) => one.m === m);
+    const [pair, joint] = [pairs[partner], joints[partner]];
+    return {
+      metric,
+      plain: values[m]?.plain ?? sql`NULL`,
+      cap: values[m]?.cap ?? null,
+      y: measureOf(measures, m),
+      of: tableOf(tables, m),
+      paired: pair === undefined || joint === undefined ? null : { x: pair.x, of: pair.ofX, joint },
+    };
+  });
+  const choices = await choiceCells(plan, measured, engine, dialect);
+  const ends = await endsOfArms(
     plan,
-    plan.metrics.flatMap((metric, m) => {
-      const own = values[m];
-      return own === undefined ? [] : [{ metric, plain: own.plain, value: own.value, paired: paired[m] ?? null }];
-    }),
+    measured.map((one, m) => ({ ...one, score: scores[ratios.findIndex((ratio) => ratio.m === m)] ?? null })),
     engine,
     dialect,
   );
-  const ends = await engine.query(pairsAtEnds(values.map(({ value }, m) => [value, paired[m] ?? null] as const)));
   const plain = values.map((value) => value.plain);
   const out = await engine.query(
     leftOut(
@@ -87,12 +100,13 @@ export async function metricCells(
     const partner = partners.findIndex((one) => one.m === m);
     const x = tables[values.length + partner];
     const joint = joints[partner];
-    const score = scores[ratios.findIndex((ratio) => ratio.m === m)];
+    const score = scores[ratios.findIndex((ratio) => ratio.m === m)]?.table;
     const hasPartner = partner >= 0 && x !== undefined && joint !== undefined;
     const cap = values[m]?.cap ?? null;
     return {
       metric: metric.name,
       leftOut: byVariant(plan, out, `none${m}`),
+      notZero: byVariant(plan, out, `some${m}`),
       countedRows: count(rows, `counted${m}`),
       countedWithoutNumber: count(rows, `numberless${m}`),
       cap: cap === null ? null : { value: cap, units: byVariant(plan, out, `over${m}`) },
@@ -100,7 +114,7 @@ export async function metricCells(
       ratio: hasPartner && score !== undefined ? { per: x, score, joint } : null,
       covariate: hasPartner && metric.adjustFor !== null ? { x, joint } : null,
       choices: choices[m] ?? [],
-      ends: plan.variants.map((_, v) => endsOf(ends, v, m)),
+      ends: ends[m] ?? [],
     };
   });
 }
@@ -111,23 +125,15 @@ function tableOf(tables: readonly CellTable[], m: number): CellTable {
   return table;
 }
 
+function measureOf(measures: readonly DecimalMeasure[], at: number): DecimalMeasure {
+  const measure = measures[at];
+  if (measure === undefined) throw new Error(`no measure ${at} of ${measures.length}`);
+  return measure;
+}
+
 function byVariant(plan: Plan, rows: readonly Row[], column: string): number[] {
   return plan.variants.map((_, v) => {
     const row = rows.find((found) => Number(found.variant) === v);
     return row === undefined ? 0 : count(row, column);
   });
-}
-
-function endsOf(rows: readonly Row[], variant: number, m: number): UnitEnds | null {
-  const row = rows.find((found) => Number(found.variant) === variant);
-  const at = (column: string) => {
-    const value = row?.[column];
-    return typeof value === "object" && value !== null ? value.nano : null;
-  };
-  const [least, most] = [at(`ly${m}`), at(`my${m}`)];
-  if (least === null || most === null) return null;
-  return {
-    smallest: { value: least, x: at(`lx${m}`) },
-    largest: { value: most, x: at(`mx${m}`) },
-  };
 }

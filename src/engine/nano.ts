@@ -9,6 +9,15 @@ export function nanoText(nano: bigint): string {
   return `${nano < 0n ? "-" : ""}${size / ONE}${places === "" ? "" : `.${places}`}`;
 }
 
+/** Decimal text of up to 9 places as a whole number of 10^-9. */
+export function nanoOf(text: string): bigint {
+  const match = /^(-?)(\d+)(?:\.(\d{1,9}))?$/.exec(text);
+  if (match === null) throw new Error(`${text} is no decimal of up to 9 places`);
+  const [, sign, whole = "", places = ""] = match;
+  const size = BigInt(whole) * ONE + BigInt(places.padEnd(9, "0"));
+  return sign === "-" ? -size : size;
+}
+
 /** The nearest double: the text is read, for dividing the integer by 10^9 would round twice. */
 export const nanoNumber = (nano: bigint): number => Number(nanoText(nano));
 

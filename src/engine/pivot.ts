@@ -41,7 +41,7 @@ export function pivotAndScale(classes: readonly PowerClass[]): { pivot: bigint; 
 }
 
 /** The smallest power of two that is not under a number of 10^-9; 1 for 0. */
-function powerOfTwoOver(nano: bigint): number {
+export function powerOfTwoOver(nano: bigint): number {
   if (nano === 0n) return 1;
   let exponent = 0;
   while (2n ** BigInt(exponent) * 1_000_000_000n < nano) exponent += 1;

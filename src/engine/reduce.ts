@@ -50,7 +50,7 @@ export interface Progress {
 
 /** The reduction of a log, without what can be asked afterwards. */
 export const reduce = (planned: Plan | null, source: PlanSource, folder: string, options: ReduceOptions = {}) =>
-  withReduction(planned, source, folder, options, async (reduction) => ({ reduction }));
+  withReduction(planned, source, folder, options, async (_plan, reduction) => ({ reduction }));
 
 /**
  * The log of a plan, reduced to cells and counts, while the engine still holds the units: what needs a figure of these
@@ -64,7 +64,7 @@ export async function withReduction<T>(
   source: PlanSource,
   folder: string,
   options: ReduceOptions,
-  use: (reduction: Reduction, session: Session) => Promise<T>,
+  use: (plan: Plan, reduction: Reduction, session: Session) => Promise<T>,
 ): Promise<T | { problems: readonly Problem[] }> {
   const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
   const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
@@ -75,7 +75,7 @@ export async function withReduction<T>(
     const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
     if (planned === null || problems.length > 0) return { problems };
     const { reduction, values } = await stages(planned, folder, workFolder, log, engine, duckdb, options);
-    return await use(reduction, openSession(planned, values, engine, duckdb));
+    return await use(planned, reduction, openSession(planned, values, engine, duckdb));
   } finally {
     options.signal?.removeEventListener("abort", stop);
     engine.close();

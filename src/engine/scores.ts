@@ -6,13 +6,19 @@ import { type Dialect, doubleValue, extremes, type Statement, score, totals } fr
 import { doubleTables } from "./tables.ts";
 import type { ScoreTable } from "./types.ts";
 
-/** Cells of each ratio's score; a and b are its numerator, after the cap, and its denominator. */
+/** A ratio's score as the engine computes it, and its cells. */
+export interface Score {
+  readonly d: Statement;
+  readonly table: ScoreTable;
+}
+
+/** Each ratio's score; a and b are its numerator, after the cap, and its denominator. */
 export async function scoreTables(
   plan: Plan,
   ratios: readonly { readonly a: Statement; readonly b: Statement }[],
   engine: Engine,
   dialect: Dialect,
-): Promise<ScoreTable[]> {
+): Promise<Score[]> {
   if (ratios.length === 0) return [];
   const sums = await engine.query(totals(ratios.flatMap(({ a, b }) => [a, b])));
   const scores = ratios.map(({ a, b }, i) => {
@@ -27,7 +33,11 @@ export async function scoreTables(
     });
     return score(a, b, arms, dialect);
   });
-  return unpivoted(scores, engine);
+  const tables = await unpivoted(scores, engine);
+  return scores.flatMap((d, i) => {
+    const table = tables[i];
+    return table === undefined ? [] : [{ d, table }];
+  });
 }
 
 /** Cells of doubles over the analysed units, each over the smallest power of two that reaches all of them. */

@@ -1,8 +1,8 @@
 import type { Plan } from "../plan/index.ts";
-import { type Engine, nano } from "./engine.ts";
+import { count, type Engine, nano } from "./engine.ts";
 import type { MetricValue } from "./metrics.ts";
 import { unpivoted } from "./scores.ts";
-import { atRankOfArm, type Dialect, double, type Statement, sql } from "./sql/index.ts";
+import { atRanks, type Dialect, double, ordered, type Statement, sql } from "./sql/index.ts";
 import type { ScoreTable } from "./types.ts";
 
 /** An adjusted contrast's values d = (y - pivot) - theta (x - X) of two arms; a missing x is X. */
@@ -11,51 +11,58 @@ export interface AdjustedRequest {
   readonly control: number;
   readonly variant: number;
   readonly theta: number;
-  /** X, the mean of x over both arms. */
-  readonly meanOfX: number;
-  /** Exact decimal text: what y is measured against. */
-  readonly pivot: string;
+  /** Exact decimal texts: what y and x are measured against. */
+  readonly pivots: readonly [y: string, x: string];
+  /** X, the mean of x over both arms, less the pivot of x: so no digit is lost where x is large and hardly varies. */
+  readonly meanFromPivot: number;
 }
 
 /** What can still be asked of the units once the first sums are known. */
 export interface Session {
   /** Cells of d, one table a request, of its two arms only. */
   adjusted(requests: readonly AdjustedRequest[]): Promise<ScoreTable[]>;
-  /** The rank-th smallest value of an arm, from 1, after the cap, in 10^-9 of the metric's unit. */
-  atRank(metric: number, variant: number, rank: bigint): Promise<bigint>;
+  /** The values of an arm at some ranks, 1 its smallest, in the order asked and in 10^-9 of the metric's unit. */
+  atRanks(metric: number, variant: number, ranks: readonly number[]): Promise<bigint[]>;
 }
 
 export function openSession(plan: Plan, values: readonly MetricValue[], engine: Engine, dialect: Dialect): Session {
-  const sizes = new Map<string, Promise<bigint>>();
+  const inOrder = new Map<number, Promise<void>>();
   return {
     adjusted: (requests) =>
       unpivoted(
         requests.map((request) => adjustedValue(request, values, dialect)),
         engine,
       ),
-    atRank: async (metric, variant, rank) => {
+    atRanks: async (metric, variant, ranks) => {
       const value = values[metric]?.value;
       if (value === undefined || plan.variants[variant] === undefined)
         throw new Error(`no arm ${variant} of metric ${metric}`);
-      const key = `${metric} ${variant} ${rank}`;
-      const found = sizes.get(key) ?? valueAt(value, variant, rank, engine);
-      sizes.set(key, found);
-      return found;
+      if (ranks.length === 0) return [];
+      const made = inOrder.get(metric) ?? engine.run(ordered(metric, value));
+      inOrder.set(metric, made);
+      await made;
+      return valuesAt(metric, variant, ranks, engine);
     },
   };
 }
 
-async function valueAt(value: Statement, variant: number, rank: bigint, engine: Engine): Promise<bigint> {
-  const [row] = await engine.query(atRankOfArm(value, variant, rank));
-  if (row === undefined) throw new Error(`no value at rank ${rank}`);
-  return nano(row, "x");
+async function valuesAt(metric: number, variant: number, ranks: readonly number[], engine: Engine): Promise<bigint[]> {
+  const rows = await engine.query(atRanks(metric, variant, ranks));
+  const found = new Map(rows.map((row) => [count(row, "place"), nano(row, "x")]));
+  return ranks.map((rank) => {
+    const value = found.get(rank);
+    if (value === undefined) throw new Error(`arm ${variant} of metric ${metric} has no value at rank ${rank}`);
+    return value;
+  });
 }
 
 function adjustedValue(request: AdjustedRequest, values: readonly MetricValue[], dialect: Dialect): Statement {
   const own = values[request.metric];
   if (own?.covariate == null) throw new Error(`metric ${request.metric} has no covariate`);
-  const y = dialect.toDouble(sql`(${own.value} - CAST(${request.pivot} AS ${dialect.sumType}))`);
-  const x = sql`coalesce((${dialect.toDouble(own.covariate)}) - ${double(request.meanOfX)}, CAST(0 AS DOUBLE))`;
+  const less = (value: Statement, pivot: string) =>
+    sql`(${dialect.toDouble(sql`(${value} - CAST(${pivot} AS ${dialect.sumType}))`)})`;
+  const y = less(own.value, request.pivots[0]);
+  const x = sql`coalesce(${less(own.covariate, request.pivots[1])} - ${double(request.meanFromPivot)}, CAST(0 AS DOUBLE))`;
   return sql`CASE WHEN variant IN (${request.control}, ${request.variant})
-    THEN (${y}) - ${double(request.theta)} * ${x} END`;
+    THEN ${y} - ${double(request.theta)} * ${x} END`;
 }

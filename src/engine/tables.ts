@@ -1,6 +1,6 @@
 import { count, type Engine, nano, type Row, real, whole, wholeOrNull } from "./engine.ts";
 import { nanoText } from "./nano.ts";
-import { pivotAndScale } from "./pivot.ts";
+import { type PowerClass, pivotAndScale } from "./pivot.ts";
 import {
   cells,
   classes,
@@ -17,9 +17,12 @@ import type { CellTable, JointTable, ScoreTable } from "./types.ts";
 /** From values over units to tables of exact sums. */
 
 export interface DecimalMeasure {
+  readonly x: Statement;
   readonly pivot: string;
   readonly scale: number;
   readonly value: Measured;
+  /** How many values lie in each power-of-two class of |x|. */
+  readonly classes: readonly PowerClass[];
 }
 
 /** What each value is measured against, from the units of a table. */
@@ -32,20 +35,28 @@ export async function decimalMeasures(
   if (values.length === 0) return [];
   const rows = await engine.query(classes(values, from, dialect));
   return values.map((x, part) => {
-    const { pivot, scale } = pivotAndScale(
-      rows
-        .filter((row) => Number(row.part) === part)
-        .map((row) => ({
-          powerOfTwo: wholeOrNull(row, "class") === null ? null : count(row, "class"),
-          n: whole(row, "n"),
-          total: nano(row, "total"),
-          least: nano(row, "least"),
-          most: nano(row, "most"),
-        })),
-    );
-    return { pivot: nanoText(pivot), scale, value: decimalValue(x, nanoText(pivot), scale, dialect) };
+    const ofPart = rows
+      .filter((row) => Number(row.part) === part)
+      .map((row) => ({
+        powerOfTwo: wholeOrNull(row, "class") === null ? null : count(row, "class"),
+        n: whole(row, "n"),
+        total: nano(row, "total"),
+        least: nano(row, "least"),
+        most: nano(row, "most"),
+      }));
+    const { pivot, scale } = pivotAndScale(ofPart);
+    return measured(x, nanoText(pivot), scale, ofPart, dialect);
   });
 }
+
+/** A value measured against a pivot and a scale that are known. */
+export const measured = (
+  x: Statement,
+  pivot: string,
+  scale: number,
+  classes: readonly PowerClass[],
+  dialect: Dialect,
+): DecimalMeasure => ({ x, pivot, scale, value: decimalValue(x, pivot, scale, dialect), classes });
 
 export async function decimalTables(
   measures: readonly DecimalMeasure[],
@@ -90,40 +101,66 @@ export async function doubleTables(
   });
 }
 
-export type MeasuredPair = readonly [DecimalMeasure, DecimalMeasure];
+/** Two values and their cells in the same groups. A unit without y has no x either. */
+export interface MeasuredPair {
+  readonly y: DecimalMeasure;
+  readonly x: DecimalMeasure;
+  readonly ofY: CellTable;
+  readonly ofX: CellTable;
+}
 
+/** What the cells of y and of x say already is taken from them: new are the products, and y over the units that have x. */
 export async function jointTables(
   pairs: readonly MeasuredPair[],
   engine: Engine,
   over: Over = EACH_BUCKET,
 ): Promise<JointTable[]> {
-  const found = await someAtATime(
-    pairs.map(([y, x]) => [y.value, x.value] as const),
-    (some) => engine.query(jointCells(some, over)),
-  );
-  return pairs.map(([y, x], i) => {
+  const asked = pairs.map(({ y, x, ofY, ofX }) => ({ y: y.value, x: x.value, isPartial: sum(ofY.n) !== sum(ofX.n) }));
+  const found = await someAtATime(asked, (some) => engine.query(jointCells(some, over)));
+  return pairs.map(({ y, x, ofY, ofX }, i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };
-    const sums = (jk: string) => rows.map((row) => whole(row, `h${at}_${jk}`));
-    const rests = (jk: string) => rows.map((row) => whole(row, `l${at}_${jk}`));
+    const [rowOfY, rowOfX] = [finder(ofY), finder(ofX)];
+    const isPartial = asked[i]?.isPartial ?? false;
+    const inY = (own: string, column: readonly bigint[]) =>
+      rows.map((row) => (isPartial ? whole(row, own) : part(column, rowOfY(row))));
+    const inX = (column: readonly bigint[]) => rows.map((row) => part(column, rowOfX(row)));
     return {
       pivots: [y.pivot, x.pivot],
       scales: [y.scale, x.scale],
       ...groupColumns(rows, at),
-      high10: sums("10"),
-      high01: sums("01"),
-      high20: sums("20"),
-      high11: sums("11"),
-      high02: sums("02"),
-      low10: rests("10"),
-      low01: rests("01"),
-      low20: rests("20"),
-      low11: rests("11"),
-      low02: rests("02"),
-      totalY: rows.map((row) => nano(row, `y${at}`)),
-      totalX: rows.map((row) => nano(row, `x${at}`)),
+      high10: inY(`h${at}_10`, ofY.high1),
+      high01: inX(ofX.high1),
+      high20: inY(`h${at}_20`, ofY.high2),
+      high11: rows.map((row) => whole(row, `h${at}_11`)),
+      high02: inX(ofX.high2),
+      low10: inY(`l${at}_10`, ofY.low1),
+      low01: inX(ofX.low1),
+      low20: inY(`l${at}_20`, ofY.low2),
+      low11: rows.map((row) => whole(row, `l${at}_11`)),
+      low02: inX(ofX.low2),
+      totalY: rows.map((row) => (isPartial ? nano(row, `y${at}`) : part(ofY.total, rowOfY(row)))),
+      totalX: inX(ofX.total),
     };
   });
 }
+
+/** Where a table has the group of a row. */
+function finder(table: CellTable): (row: Row) => number {
+  const places = new Map(table.n.map((_, i) => [`${table.variant[i]}/${table.bucket[i]}`, i]));
+  return (row) => {
+    const place = places.get(`${Number(row.variant)}/${Number(row.bucket)}`);
+    if (place === undefined) throw new Error(`a pair in group ${row.variant}/${row.bucket}, where its value has none`);
+    return place;
+  };
+}
+
+function part<T>(column: readonly T[], place: number): T {
+  const value = column[place];
+  if (value === undefined) throw new Error(`no row ${place} in a column of ${column.length}`);
+  return value;
+}
+
+const sum = (counts: readonly number[]): number => counts.reduce((all, n) => all + n, 0);
 
 // A statement of a thousand columns takes longer to plan than to run.
 const AT_ONCE = 12;

@@ -67,6 +67,8 @@ export interface MetricCells {
   readonly metric: string;
   /** Per variant: analysed units without a value (only where a unit without rows is left out). */
   readonly leftOut: ByVariant;
+  /** Per variant: units whose value is not 0. */
+  readonly notZero: ByVariant;
   /** Counted rows (in follow-up, of analysed units) that hold no number; they add nothing. */
   readonly countedRows: number;
   readonly countedWithoutNumber: number;
@@ -77,28 +79,30 @@ export interface MetricCells {
   readonly ratio: { readonly per: CellTable; readonly score: ScoreTable; readonly joint: JointTable } | null;
   /** x of the adjusted contrast, over the units that have one and a value; joint sums of (value, x) over the same. */
   readonly covariate: { readonly x: CellTable; readonly joint: JointTable } | null;
-  /** The same metric under other reasonable choices (METHODS 6): one cell an arm, bucket 0. */
+  /** The same metric under other reasonable choices (METHODS 6), as far as they differ from the plan's. */
   readonly choices: readonly ChoiceCells[];
-  /** Per variant the pair (value, and x of a ratio's denominator or a covariate) of the unit with the smallest and the largest value. */
+  /**
+   * Per variant the unit with the smallest and the one with the largest value, of a ratio the smallest and the largest
+   * score, of several the one with the smallest pair; x is its ratio's denominator or its covariate.
+   */
   readonly ends: readonly (UnitEnds | null)[];
 }
 
-export type ChoiceId =
+export type OtherCells =
   | "no-cap"
   | "cap-0.99"
   | "cap-0.999"
-  | "log"
   | "other-way-in-two-variants"
   | "any-follow-up"
   | "without-first-day";
 
-export interface ChoiceCells {
-  readonly choice: ChoiceId;
-  readonly of: CellTable;
-  readonly joint: JointTable | null;
-  /** Only for log: log(1 + x), cells of a double without exact total. */
-  readonly logged: ScoreTable | null;
-}
+/**
+ * A metric under one other choice, one row an arm; log(1 + x) are doubles without an exact total. Smallest and largest are
+ * bounds: the unit that held one may be among those left out.
+ */
+export type ChoiceCells =
+  | { readonly choice: OtherCells; readonly of: CellTable; readonly joint: JointTable | null }
+  | { readonly choice: "log"; readonly logged: ScoreTable };
 
 /** In 10^-9 of the unit of each; x is null where there is none. */
 export interface UnitEnds {

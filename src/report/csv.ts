@@ -2,7 +2,7 @@ import type { EffectJson } from "./types.ts";
 
 type Cell = string | number | null;
 
-/** One column: its head and what it takes of an effect. */
+/** One column: its head and what it takes of an effect. Where there is an adjusted difference, that one decides. */
 const COLUMNS: readonly (readonly [head: string, cell: (effect: EffectJson) => Cell])[] = [
   ["metric", (e) => e.metric],
   ["role", (e) => e.role],
@@ -26,7 +26,22 @@ const COLUMNS: readonly (readonly [head: string, cell: (effect: EffectJson) => C
   ["relative", (e) => e.relative?.estimate ?? null],
   ["relative_low", (e) => e.relative?.low ?? null],
   ["relative_high", (e) => e.relative?.high ?? null],
+  ["adjusted_difference", (e) => e.adjusted?.difference.estimate ?? null],
+  ["adjusted_difference_low", (e) => e.adjusted?.difference.low ?? null],
+  ["adjusted_difference_high", (e) => e.adjusted?.difference.high ?? null],
+  ["adjusted_standard_error", (e) => e.adjusted?.difference.standardError ?? null],
+  ["adjusted_z", (e) => e.adjusted?.difference.z ?? null],
+  ["adjusted_p", (e) => e.adjusted?.difference.p ?? null],
+  ["adjusted_p_adjusted", (e) => e.adjusted?.difference.pAdjusted ?? null],
+  ["adjusted_method", (e) => e.adjusted?.difference.method ?? null],
+  ["adjusted_relative", (e) => e.adjusted?.relative?.estimate ?? null],
+  ["adjusted_relative_low", (e) => e.adjusted?.relative?.low ?? null],
+  ["adjusted_relative_high", (e) => e.adjusted?.relative?.high ?? null],
+  ["theta", (e) => e.adjusted?.theta ?? null],
+  ["variance_reduction", (e) => e.adjusted?.varianceReduction ?? null],
   ["zone", (e) => e.zone],
+  ["detectable", (e) => e.power.detectable],
+  ["units_for_worthwhile", (e) => e.power.unitsForWorthwhile],
 ];
 
 /** effects.csv: one row an effect, RFC 4180 (comma, CRLF, quotes doubled). What does not exist is an empty cell. */

@@ -1,6 +1,7 @@
 import {
   absolute,
   amountText,
+  deciding,
   type Effect,
   measure,
   metricOf,
@@ -53,7 +54,7 @@ const NO_INTERVAL: Signed = { estimate: NONE, interval: "no interval" };
 
 export function effectText(effect: Effect, plan: Plan): EffectText {
   const metric = metricOf(effect, plan);
-  const { control, variant, relative } = effect.contrast;
+  const { control, variant, relative } = deciding(effect);
   const { levels, unit } = levelsText([control.mean, variant.mean], metric);
   const own = measure(effect, plan);
   const rule = ruleOf(metric);

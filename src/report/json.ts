@@ -1,10 +1,11 @@
 import type { Check } from "../checks/types.ts";
-import type { Effect } from "../decision/index.ts";
+import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
+import type { Contrast } from "../stats/types.ts";
 import { twelveDigits } from "./digits.ts";
 import { rowLine, unitLine } from "./ledger.ts";
-import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson } from "./types.ts";
+import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
 export function reportJson(inputs: ReportInputs): ReportJson {
@@ -23,7 +24,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     effects: inputs.effects.map(effectJson),
     subgroups: [],
     accrual: [],
-    sensitivity: [],
+    sensitivity: inputs.choices.map(sensitivityJson),
     changes: null,
     provenance: {
       version: inputs.version,
@@ -83,8 +84,7 @@ function besideFigures<T extends object, F extends object>(own: T, figures: F, o
 }
 
 function effectJson(effect: Effect): EffectJson {
-  const { contrast } = effect;
-  const { difference, relative } = contrast;
+  const { contrast, adjusted } = effect;
   return {
     metric: effect.metric,
     role: effect.role,
@@ -92,20 +92,61 @@ function effectJson(effect: Effect): EffectJson {
     variant: effect.variant,
     control: effect.control,
     arms: { control: contrast.control, variant: contrast.variant },
-    difference: {
-      estimate: difference.estimate,
-      standardError: difference.standardError,
-      low: difference.low,
-      high: difference.high,
-      z: difference.z,
-      p: difference.p,
-      pAdjusted: effect.pAdjusted,
-      method: difference.method,
-    },
-    relative: "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high },
-    adjusted: null,
+    difference: differenceJson(contrast, adjusted === null ? effect.pAdjusted : adjusted.pAdjustedOfPlain),
+    relative: relativeJson(contrast),
+    adjusted:
+      adjusted === null
+        ? null
+        : {
+            difference: differenceJson(adjusted.contrast, effect.pAdjusted),
+            relative: relativeJson(adjusted.contrast),
+            theta: adjusted.theta,
+            varianceReduction: adjusted.varianceReduction,
+          },
     zone: effect.zone,
-    power: { detectable: null, unitsForWorthwhile: null },
-    normality: null,
+    power: { detectable: effect.power.detectable, unitsForWorthwhile: effect.power.unitsForWorthwhile },
+    normality: normalityJson(effect.normality),
+  };
+}
+
+function differenceJson({ difference }: Contrast, pAdjusted: number | null): EffectJson["difference"] {
+  const { estimate, standardError, low, high, z, p, method } = difference;
+  return { estimate, standardError, low, high, z, p, pAdjusted, method };
+}
+
+function relativeJson({ relative }: Contrast): EffectJson["relative"] {
+  return "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high };
+}
+
+/** The worse of pooled and own shapes; the larger of the arms' shares; of the rules of thumb the stricter one. */
+function normalityJson(normality: ContrastNormality | null): EffectJson["normality"] {
+  if (normality === null) return null;
+  const { tails, corrected, unitsForTails, unitsByRule, largest } = normality;
+  const shares = [largest?.control, largest?.variant].flatMap((share) => (share == null ? [] : [share.ofSquares]));
+  return {
+    skew: tails.skew,
+    lowerTail: tails.reported.lowerTail,
+    upperTail: tails.reported.upperTail,
+    own: { lowerTail: tails.own.lowerTail, upperTail: tails.own.upperTail },
+    skewCorrected: { low: corrected.low, high: corrected.high },
+    unitsForTails,
+    unitsByRule: unitsByRule.kohavi,
+    largestShare: shares.length === 0 ? null : Math.max(...shares),
+  };
+}
+
+function sensitivityJson({ metric, variant, rows }: Choices): SensitivityJson {
+  return {
+    metric,
+    variant,
+    rows: rows.map(({ choice, difference: { estimate, low, high, p }, sign, agrees }) => ({
+      choice,
+      estimate,
+      low,
+      high,
+      sign,
+      p,
+      agrees,
+    })),
   };
 }

@@ -1,10 +1,13 @@
 import { controlOf, whenText } from "./plan-words.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
+import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
-import { powerParagraphs } from "./sections/power.ts";
+import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
+import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
@@ -21,9 +24,16 @@ export interface Page {
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
-  readonly metrics: readonly MetricSection[];
-  readonly power: readonly string[];
+  readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
+  readonly power: PowerSection;
   readonly methods: MethodsSection;
+}
+
+/** What stands below a metric's tables. */
+export interface FurtherOnMetric {
+  readonly sampling: readonly SamplingPart[];
+  readonly choices: readonly ChoicesFigure[];
+  readonly turning: readonly TurningTable[];
 }
 
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
@@ -38,6 +48,9 @@ const CONTENTS = [
 
 export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
+  const isDecided = conclusion.decision !== "undecidable";
+  const sampling = await samplingParts(plan, effects, reduction, isDecided);
+  const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
     experiment: plan.experiment,
@@ -51,8 +64,14 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
-    metrics: metricSections(plan, reduction, effects),
-    power: powerParagraphs(plan, reduction),
+    metrics: metricSections(plan, reduction, effects).map((metric) => ({
+      ...metric,
+      sampling: sampling.get(metric.name) ?? [],
+      choices: figures.get(metric.name) ?? [],
+      // What an effect amounts to is not for data that must be mended first.
+      turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
+    })),
+    power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),
   };
 }

@@ -1,7 +1,7 @@
 import { Temporal } from "temporal-polyfill";
 import type { Reduction } from "../engine/types.ts";
 import type { Metric, Part, Plan, Variant } from "../plan/types.ts";
-import { type Day, dateSpan, list, plain, plural } from "../words/index.ts";
+import { count, type Day, dateSpan, list, percentile, plain, plural } from "../words/index.ts";
 
 export function controlOf(plan: Plan): Variant {
   const control = plan.variants.find((variant) => variant.isControl);
@@ -41,7 +41,17 @@ export function measureText(metric: Metric, plan: Plan): string {
   }
   const without =
     metric.withoutRows === "zero" ? `a ${one} without such rows counts as 0` : `a ${one} without such rows is left out`;
+  if (metric.quantile !== null) {
+    return `The ${percentile(metric.quantile)} over ${many} of ${amountOf(metric.of)} ${when}: ${outOf(metric.quantile)} ${many} have no more; ${without}. ${better}`;
+  }
   return `The mean per ${one} of ${amountOf(metric.of)} ${when}; ${without}.${cap} ${better}`;
+}
+
+/** "95 of 100", "999 of 1,000", as exact as the plan's text. */
+function outOf(share: string): string {
+  const [, places = ""] = share.split(".");
+  const digits = places.padEnd(2, "0");
+  return `at least ${count(Number(digits))} of ${count(10 ** digits.length)}`;
 }
 
 function capText({ cap, unitOfMeasure }: Metric): string {

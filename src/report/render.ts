@@ -6,7 +6,19 @@ import { typeset } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
 const FOLDER = new URL("../../templates/", import.meta.url);
-const PARTIALS = ["decision", "forest", "contents", "checks", "counted", "metrics", "power", "methods"] as const;
+const PARTIALS = [
+  "decision",
+  "forest",
+  "choices",
+  "turning",
+  "contents",
+  "checks",
+  "counted",
+  "metrics",
+  "sampling",
+  "power",
+  "methods",
+] as const;
 
 /** The page as HTML. Everything is escaped by Handlebars; the one door for other text is `ownDrawingUnescaped`. */
 export function renderPage(page: Page): string {

@@ -5,6 +5,7 @@ const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
 );
 const count = z.number().min(0);
+const tail = z.number().min(0).max(1);
 const byVariant = z.record(z.string(), count);
 const numberOrNull = z.number().nullable();
 const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
@@ -20,33 +21,59 @@ const arm = z.strictObject({
   largest: numberOrNull,
 });
 
+const difference = z
+  .strictObject({
+    estimate: numberOrNull,
+    standardError: numberOrNull,
+    low: numberOrNull,
+    high: numberOrNull,
+    z: numberOrNull,
+    p: numberOrNull,
+    pAdjusted: numberOrNull,
+    method: z.enum(["normal", "welch", "score", "skew-corrected", "quantile"]),
+  })
+  .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise.");
+
+const relative = z
+  .strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull })
+  .nullable()
+  .describe("Variant over control minus 1. An end without a limit is null.");
+
 const effect = z.strictObject({
   metric: z.string(),
   role: z.enum(["primary", "secondary", "guardrail"]),
-  summary: z.enum(["mean", "proportion", "ratio-of-totals"]),
+  summary: z.enum(["mean", "proportion", "quantile", "ratio-of-totals"]),
   variant: z.string(),
   control: z.string(),
   arms: z.strictObject({ control: arm, variant: arm }),
-  difference: z
-    .strictObject({
-      estimate: numberOrNull,
-      standardError: numberOrNull,
-      low: numberOrNull,
-      high: numberOrNull,
-      z: numberOrNull,
-      p: numberOrNull,
-      pAdjusted: numberOrNull,
-      method: z.enum(["normal", "welch", "score", "quantile"]),
-    })
-    .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise."),
-  relative: z
-    .strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull })
+  difference,
+  relative,
+  adjusted: z
+    .strictObject({ difference, relative, theta: z.number(), varianceReduction: z.number() })
     .nullable()
-    .describe("Variant over control minus 1. An end without a limit is null."),
-  adjusted: z.null(),
+    .describe("Adjusted for the plan's covariate. Where not null its difference decides, and zone and power are its."),
   zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
   power: z.strictObject({ detectable: numberOrNull, unitsForWorthwhile: numberOrNull }),
-  normality: z.null(),
+  normality: z
+    .strictObject({
+      skew: z.number().describe("Skewness of the estimate."),
+      lowerTail: tail.describe("Chance that the normal interval lies wholly below the truth."),
+      upperTail: tail.describe("Chance that it lies wholly above the truth."),
+      own: z
+        .strictObject({ lowerTail: tail, upperTail: tail })
+        .describe("By each arm's own shape; above stands the worse of that and of one shape for both."),
+      skewCorrected: z.strictObject({ low: z.number(), high: z.number() }),
+      unitsForTails: count
+        .nullable()
+        .describe("Units of all arms from which on both tails are within a fifth of the nominal one; at least."),
+      unitsByRule: count.describe("Rule of thumb: 355 times the squared skewness, units of each arm."),
+      largestShare: z
+        .number()
+        .nullable()
+        .describe("The largest unit's share of an arm's sum of squares about the mean; null for proportions."),
+    })
+    .nullable()
+    .describe("How good the normal approximation is for the contrast that decides."),
 });
 
 const check = z
@@ -89,7 +116,42 @@ export const reportSchema = z.strictObject({
   effects: z.array(effect),
   subgroups: z.array(z.never()),
   accrual: z.array(z.never()),
-  sensitivity: z.array(z.never()),
+  sensitivity: z
+    .array(
+      z.strictObject({
+        metric: z.string(),
+        variant: z.string(),
+        rows: z.array(
+          z.strictObject({
+            choice: z.enum([
+              "as-planned",
+              "unadjusted",
+              "no-cap",
+              "cap-0.99",
+              "cap-0.999",
+              "without-largest",
+              "other-way-in-two-variants",
+              "any-follow-up",
+              "without-first-day",
+              "normal",
+              "welch",
+              "score",
+              "skew-corrected",
+              "bootstrap-t",
+              "randomisation",
+              "log",
+            ]),
+            estimate: numberOrNull,
+            low: numberOrNull,
+            high: numberOrNull,
+            sign: z.union([z.literal(-1), z.literal(0), z.literal(1)]).nullable(),
+            p: numberOrNull,
+            agrees: z.boolean(),
+          }),
+        ),
+      }),
+    )
+    .describe("Each contrast under other reasonable choices. agrees: it stands where the plan's own choice puts it."),
   changes: z.null(),
   provenance: z.strictObject({
     version: z.string(),

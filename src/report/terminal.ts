@@ -1,6 +1,6 @@
-import type { Effect } from "../decision/index.ts";
+import { covariateInWords, type Effect } from "../decision/index.ts";
 import type { Plan } from "../plan/types.ts";
-import { count, planPercent, plural } from "../words/index.ts";
+import { count, list, planPercent, plural } from "../words/index.ts";
 import { effectText, verdictText } from "./effect-text.ts";
 import { controlOf } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
@@ -13,6 +13,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
   const { plan, effects, conclusion, reduction } = inputs;
   const table =
     conclusion.decision === "undecidable" || effects.length === 0 ? [] : [...effectTable(effects, plan), ""];
+  const adjusted = adjustedText(effects, plan);
   const notes = answers(inputs);
   const [data] = notes;
   const counted = reduction.unitLines.find((line) => line.id === "analysed")?.units ?? 0;
@@ -23,6 +24,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
     ...findings(inputs).flatMap((sentence) => wrapped(sentence)),
     "",
     ...table,
+    ...(table.length === 0 || adjusted === "" ? [] : labelled("Adjusted", adjusted)),
     ...labelled("Data", data?.answer ?? ""),
     ...labelled(
       "Counted",
@@ -33,6 +35,18 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
   ]
     .map((line) => line.trimEnd())
     .join("\n");
+}
+
+/** "Booked and Fare per visitor for the same in the 14 days before enrolment": which figures of the table are adjusted; "" if none is. */
+function adjustedText(effects: readonly Effect[], { metrics }: Plan): string {
+  const adjusted = metrics.filter(({ name }) => effects.some((e) => e.metric === name && e.adjusted !== null));
+  const covariates = new Set(adjusted.map(covariateInWords));
+  return [...covariates]
+    .map((covariate) => {
+      const names = adjusted.filter((metric) => covariateInWords(metric) === covariate).map(({ name }) => name);
+      return `${list(names)} for ${covariate}`;
+    })
+    .join("; ");
 }
 
 /** Each variant has a table of its own, so that its level stands under its name; all tables share their columns. */

@@ -1,5 +1,5 @@
 import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
-import type { Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
+import type { ChoiceName, Choices, Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
 import type { Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
@@ -19,7 +19,7 @@ export interface ReportJson {
   readonly effects: readonly EffectJson[];
   readonly subgroups: readonly never[];
   readonly accrual: readonly never[];
-  readonly sensitivity: readonly never[];
+  readonly sensitivity: readonly SensitivityJson[];
   readonly changes: null;
   readonly provenance: ProvenanceJson;
 }
@@ -61,10 +61,42 @@ export interface EffectJson {
   readonly arms: { readonly control: ArmFigures; readonly variant: ArmFigures };
   readonly difference: Omit<Difference, "method"> & { readonly pAdjusted: number | null; readonly method: string };
   readonly relative: Relative | null;
-  readonly adjusted: null;
+  /** Where not null, its difference decides. */
+  readonly adjusted: {
+    readonly difference: EffectJson["difference"];
+    readonly relative: Relative | null;
+    readonly theta: number;
+    readonly varianceReduction: number;
+  } | null;
   readonly zone: Zone;
   readonly power: { readonly detectable: number | null; readonly unitsForWorthwhile: number | null };
-  readonly normality: null;
+  /** Null for a quantile, and where an arm has no shape. */
+  readonly normality: {
+    readonly skew: number;
+    readonly lowerTail: number;
+    readonly upperTail: number;
+    readonly own: { readonly lowerTail: number; readonly upperTail: number };
+    readonly skewCorrected: { readonly low: number; readonly high: number };
+    readonly unitsForTails: number | null;
+    readonly unitsByRule: number;
+    readonly largestShare: number | null;
+  } | null;
+}
+
+/** One contrast under other reasonable choices, the plan's own ("as-planned") first. */
+export interface SensitivityJson {
+  readonly metric: string;
+  readonly variant: string;
+  readonly rows: readonly {
+    readonly choice: ChoiceName;
+    /** In the metric's unit; null where a choice says only whether there is a difference. */
+    readonly estimate: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly sign: -1 | 0 | 1 | null;
+    readonly p: number | null;
+    readonly agrees: boolean;
+  }[];
 }
 
 export interface ProvenanceJson {
@@ -98,6 +130,8 @@ export interface ReportInputs {
   readonly checks: readonly Check[];
   /** One a metric and variant, in plan order. */
   readonly effects: readonly Effect[];
+  /** One an effect, in their order. */
+  readonly choices: readonly Choices[];
   readonly conclusion: Conclusion;
 }
 

@@ -11,8 +11,9 @@ const NOTHING: Moments = { mean: null, variance: null, skewness: null, kurtosis:
 
 /**
  * An arm as the report shows it. A ratio's mean is the ratio, its spread and ends those of the score, its total the
- * numerator's (DESIGN 7). What does not exist is null: everything but units and total without units, the spread of one
- * unit or of units that are all alike.
+ * numerator's; a quantile's mean is the quantile, without spread and total (DESIGN 7); an adjusted arm is that of its
+ * adjusted values, without total. What does not exist is null: everything but units and total without units, the spread of
+ * one unit or of units that are all alike.
  */
 export function armFigures(arm: Arm): ArmFigures {
   const found = level(arm);
@@ -25,7 +26,7 @@ export function armFigures(arm: Arm): ArmFigures {
     sd: spread.variance === null ? null : Math.sqrt(spread.variance),
     skewness: spread.skewness,
     kurtosis: spread.kurtosis,
-    total: sums.total === null ? null : nearestNumber(fraction(sums.total, NANO)),
+    total: arm.kind === "quantile" || sums.total === null ? null : nearestNumber(fraction(sums.total, NANO)),
     smallest: ends?.smallest ?? null,
     largest: ends?.largest ?? null,
   };
@@ -39,6 +40,10 @@ function shape(arm: Arm): Moments {
       return shareMoments(arm.sums);
     case "ratio":
       return arm.score === null ? NOTHING : moments(arm.score, scoreNoise(arm));
+    case "quantile":
+      return NOTHING;
+    case "adjusted":
+      return moments(arm.sums, arm.noise);
     default:
       return unknown(arm);
   }

@@ -1,12 +1,13 @@
-import type { BucketCells } from "../cells/types.ts";
 import { isAbsent } from "./absent.ts";
-import { type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
+import { type BucketCells, type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
 import { drawRows, type Studentised, studentised, sumRows } from "./draws.ts";
-import { generator, type Seed } from "./generator.ts";
+import { type Seed, wordsOf } from "./generator.ts";
 import { type Histogram, histogram } from "./histogram.ts";
+import { normalCritical } from "./normal.ts";
 import { relative } from "./relative.ts";
 import { type NotDrawn, tooFew, tooManyUndefined } from "./resampling.ts";
 import type { Counts } from "./share.ts";
+import type { TailPair } from "./tails.ts";
 import type { Absent, Level, Relative } from "./types.ts";
 
 /** Shares of the units at which the distribution is drawn, so that its way to the normal curve is seen. */
@@ -24,7 +25,11 @@ export interface BootstrapT {
   /** Draws that have no T; left out. */
   readonly undefinedDraws: number;
   /** The drawn distribution of T at n/16, n/4 and n units; null where an arm has under 20 units or T is often undefined. */
-  readonly drawn: readonly { readonly share: number; readonly histogram: Histogram | null }[];
+  readonly drawn: readonly {
+    readonly share: number;
+    readonly histogram: Histogram | null;
+    readonly tails: TailPair | null;
+  }[];
 }
 
 /**
@@ -49,13 +54,13 @@ export function bootstrapT(
   const few = tooFew(cells, shares);
   if (few !== null) return few;
   const table = tableOfArms(cells);
-  const next = generator(seed);
+  const fill = wordsOf(seed);
   const t = studentised(cells.kind, wholeOf(table), gapOfX(cells));
   const units = Math.min(...[cells.control.n, cells.variant.n].map((n) => n.reduce((sum, m) => sum + m, 0)));
 
   const found = SHARES.map((share) => ({
     share,
-    values: units * share < UNITS_AT_LEAST ? null : drawnT(table, Math.round(table.rows * share), draws, t, next),
+    values: units * share < UNITS_AT_LEAST ? null : drawnT(table, Math.round(table.rows * share), draws, t, fill),
   }));
   const all = found.at(-1)?.values ?? new Float64Array();
   const undefinedDraws = draws - all.length;
@@ -71,10 +76,11 @@ export function bootstrapT(
     upperQuantile,
     draws,
     undefinedDraws,
-    drawn: found.map(({ share, values }) => ({
-      share,
-      histogram: values === null || tooManyUndefined(draws - values.length, draws) ? null : histogram(values),
-    })),
+    drawn: found.map(({ share, values }) =>
+      values === null || tooManyUndefined(draws - values.length, draws)
+        ? { share, histogram: null, tails: null }
+        : { share, histogram: histogram(values), tails: beyond(values, normalCritical(alpha)) },
+    ),
   };
 }
 
@@ -104,14 +110,26 @@ export function bootstrapRelative(
   }
 }
 
+/** Shares of the values below -z and above z. */
+function beyond(values: Float64Array, z: number): TailPair {
+  const share = (isBeyond: (value: number) => boolean) => values.filter(isBeyond).length / values.length;
+  return { lowerTail: share((value) => value < -z), upperTail: share((value) => value > z) };
+}
+
 /** T of each draw of `many` buckets, sorted; without the undefined ones. */
-function drawnT(table: DrawTable, many: number, draws: number, t: Studentised, next: () => number): Float64Array {
+function drawnT(
+  table: DrawTable,
+  many: number,
+  draws: number,
+  t: Studentised,
+  fill: (into: Uint32Array) => void,
+): Float64Array {
   const picks = new Uint32Array(many);
   const sums = new Float64Array(table.width);
   const values = new Float64Array(draws);
   let kept = 0;
   for (let draw = 0; draw < draws; draw++) {
-    drawRows(picks, table.rows, next);
+    drawRows(picks, table.rows, fill);
     sumRows(table, picks, sums);
     const value = t(sums);
     if (!Number.isNaN(value)) values[kept++] = value;

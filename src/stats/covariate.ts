@@ -26,8 +26,8 @@ export interface Adjusted {
  * cov and var unbiased, a missing x at X. The adjusted levels keep the level of y, so Fieller applies. With arms of one
  * size theta is the slope of the regression on arm and x; with one variance of x in both arms, the difference is that of the
  * regression with a slope of its own in each arm. All in whole numbers, each figure rounded once.
- * @returns `no-units`; `few-units` with one unit in an arm; `zero-variance` where y does not vary; `same-covariate` where x
- *   does not vary within the arms, or no unit has one; `lost-digits` where y is x but for rounding
+ * @returns `no-units`; `few-units` with one unit in an arm; `zero-variance` where y does not vary; `no-covariate` where no unit
+ *   has an x; `same-covariate` where x does not vary within the arms; `lost-digits` where y is x but for rounding
  *
  * Source: Deng, Xu, Kohavi and Walker 2013, WSDM, 123-132; Yang and Tsiatis 2001, The American Statistician 55, 314-321;
  * Lin 2013, Annals of Applied Statistics 7, 295-318.
@@ -38,7 +38,7 @@ export function adjusted(control: CovariateArm, variant: CovariateArm): Adjusted
   if (least < 2) return { absent: least === 0 ? "no-units" : "few-units" };
   if (isConstant(control.value) && isConstant(variant.value)) return { absent: "zero-variance" };
   const centre = centreOf([control, variant]);
-  if (centre.count === 0n) return { absent: "same-covariate" };
+  if (centre.count === 0n) return { absent: "no-covariate" };
 
   const [c, t] = [secondMoments(control, centre), secondMoments(variant, centre)];
   const slope = slopeOf(c, t);

@@ -1,6 +1,6 @@
 import { type Fraction, fraction, nearestNumber } from "../cells/index.ts";
 import { isAbsent } from "./absent.ts";
-import { normalCritical, normalTwoSided } from "./normal.ts";
+import { normalTwoSided } from "./normal.ts";
 import type { Absent, Difference, Level, Method } from "./types.ts";
 
 /** A difference that has its interval, and the critical value that made it. */
@@ -19,18 +19,17 @@ export interface Interval {
 /**
  * Difference of two levels, variant minus control, with its normal-approximation interval.
  *
- *   D = level_t - level_c    SE = sqrt(v_t + v_c)    z = D / SE    D -+ z(1 - alpha/2) SE
- * @param alpha in (0, 1), of the interval; p is of the one difference, whatever alpha
+ *   D = level_t - level_c    SE = sqrt(v_t + v_c)    z = D / SE    D -+ critical SE
+ * @param critical above 0, of the interval: z(1 - alpha/2) for one; p is of the one difference, whatever it is
  * @returns `few-units` or `lost-digits` where an arm has no v, `zero-variance` where neither arm varies
  *
  * Source: Neyman 1923, translated in Statistical Science 5 (1990) 465-472; Imbens and Rubin 2015, ch. 6.
  */
-export function difference(control: Level, variant: Level, alpha: number): Interval | Absent {
+export function difference(control: Level, variant: Level, critical: number): Interval | Absent {
   const spread = spreadOf(control, variant);
   if (isAbsent(spread)) return spread;
   const { standardError } = spread;
   const estimate = estimateOf(control, variant);
-  const critical = normalCritical(alpha);
   const z = estimate / standardError;
   return { ...around(estimate, critical * standardError), standardError, z, p: normalTwoSided(z), critical, df: null };
 }

@@ -2,26 +2,44 @@
 export type Seed = readonly [number, number, number, number];
 
 /**
- * Unsigned 32-bit words, uniform, the same for the same seed on every machine: xoshiro128**.
+ * Fills arrays with unsigned 32-bit words, uniform, the same for the same seed on every machine: xoshiro128**.
  *
  *   word = rotl(s1 * 5, 7) * 9, then the state moves by shifts and xors; period 2^128 - 1
- * The state lives in the function that is returned: two generators never disturb each other.
+ * The state lives in the function that is returned: two never disturb each other. Many words at a time, for draws take
+ * most of their time here.
  *
  * Source: Blackman and Vigna 2021, Scrambled linear pseudorandom number generators, ACM Transactions on Mathematical
  * Software 47, article 36; constants of the reference program xoshiro128starstar.c, version 1.1 (public domain).
  */
+export function wordsOf(seed: Seed): (into: Uint32Array) => void {
+  let state = seed;
+  return (into) => {
+    let [s0, s1, s2, s3] = state;
+    for (let i = 0; i < into.length; i++) {
+      into[i] = Math.imul(rotateLeft(Math.imul(s1, 5), 7), 9);
+      const t = s1 << 9;
+      s2 ^= s0;
+      s3 ^= s1;
+      s1 ^= s2;
+      s0 ^= s3;
+      s2 ^= t;
+      s3 = rotateLeft(s3, 11);
+    }
+    state = [s0, s1, s2, s3];
+  };
+}
+
+/** The same words one by one. */
 export function generator(seed: Seed): () => number {
-  let [s0, s1, s2, s3] = seed;
+  const fill = wordsOf(seed);
+  const held = new Uint32Array(256);
+  let next = held.length;
   return () => {
-    const word = Math.imul(rotateLeft(Math.imul(s1, 5), 7), 9) >>> 0;
-    const t = s1 << 9;
-    s2 ^= s0;
-    s3 ^= s1;
-    s1 ^= s2;
-    s0 ^= s3;
-    s2 ^= t;
-    s3 = rotateLeft(s3, 11);
-    return word;
+    if (next === held.length) {
+      fill(held);
+      next = 0;
+    }
+    return held[next++] as number;
   };
 }
 

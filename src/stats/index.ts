@@ -1,31 +1,38 @@
+// Distributions
+
 // Contrasts
-
 export { isAbsent } from "./absent.ts";
+export { type AdjustedArm, adjustedArms, meanFromPivot } from "./adjusted-arm.ts";
 export { armFigures } from "./arm-figures.ts";
-export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
-export { contrast } from "./contrast.ts";
-
-// Several questions at once
-
-export { benjaminiHochberg } from "./benjamini-hochberg.ts";
-export { dunnettCritical, dunnettP } from "./dunnett.ts";
-export { holm } from "./holm.ts";
-export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
-
-// Quantiles
-
-export { type QuantileContrast, quantileContrast } from "./quantile.ts";
-export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
-export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
-
+export { armOfLevel, shapedAs } from "./arm-of-level.ts";
+// Normal approximation
+export { armsAlike } from "./arms-alike.ts";
 // Covariates
-
 export { type Balance, balance } from "./balance.ts";
+// More than one question
+export { benjaminiHochberg } from "./benjamini-hochberg.ts";
+export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
+export type { BootstrapT } from "./bootstrap-t.ts";
+export type { BucketCells } from "./bucket-cells.ts";
+export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
+export { type Alike, contrast, contrastBy } from "./contrast.ts";
 export { type Adjusted, adjusted } from "./covariate.ts";
-
+export { dunnettCritical, dunnettP } from "./dunnett.ts";
 // Power and sizes
-
 export { type Exaggeration, exaggeration } from "./exaggeration.ts";
+// Tests of counts
+export { fisher } from "./fisher.ts";
+export type { Histogram } from "./histogram.ts";
+export { holm } from "./holm.ts";
+export { independence } from "./independence.ts";
+export type { LargestShare } from "./largest-share.ts";
+export { level } from "./level.ts";
+// Moments
+export { type Moments, moments } from "./moments.ts";
+export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
+export { normalQuantile } from "./normal-quantile.ts";
+export { type Normality, normality } from "./normality.ts";
+export { pearson } from "./pearson.ts";
 export {
   beyondWorthwhile,
   detectable,
@@ -35,38 +42,19 @@ export {
   sizeForAll,
   unitsFor,
 } from "./power.ts";
-export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
-
-// The normal approximation
-
-export { armsAlike } from "./arms-alike.ts";
-export { type BootstrapT, bootstrapRelative, bootstrapT } from "./bootstrap-t.ts";
-export { type Seed, seedOf } from "./generator.ts";
-export type { Histogram } from "./histogram.ts";
-export type { LargestShare } from "./largest-share.ts";
-export { type Normality, type NormalityArm, normality, normalityOfArms } from "./normality.ts";
-export { type Randomisation, randomisation } from "./randomisation.ts";
+// Quantiles
+export { type QuantileContrast, quantileContrast } from "./quantile.ts";
+export { type QuantileArm, quantileSearch, quantilesCompared } from "./quantile-arms.ts";
+export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
+export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
+export { relativeByEnds } from "./relative-by-ends.ts";
+export { type Resampled, resampled } from "./resampled.ts";
 export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
-export type { SkewCorrected } from "./skew-corrected.ts";
-export type { TailLevel, TailPair, Tails } from "./tails.ts";
-
-// Tests of counts
-
-export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
-export { fisher } from "./fisher.ts";
-export { independence } from "./independence.ts";
-export { pearson } from "./pearson.ts";
-
-// Moments
-
-export { type Moments, moments } from "./moments.ts";
-
-// Distributions
-
-export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
-export { normalQuantile } from "./normal-quantile.ts";
+export { type Counts, counts } from "./share.ts";
+export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
+export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";
+export { CAUTION_SHARE, type TailLevel, type TailPair, type Tails } from "./tails.ts";
 
 // Types
-
 export type { Absent, ArmFigures, Contrast, Difference, Level, Method, Relative } from "./types.ts";

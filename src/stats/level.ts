@@ -1,5 +1,7 @@
 import type { Arm } from "../cells/types.ts";
+import { adjustedLevel } from "./adjusted-arm.ts";
 import { meanLevel } from "./mean.ts";
+import { quantileLevel } from "./quantile-arms.ts";
 import { ratioOfTotals } from "./ratio-of-totals.ts";
 import { share } from "./share.ts";
 import type { Absent, Level } from "./types.ts";
@@ -13,6 +15,10 @@ export function level(arm: Arm): Level | Absent {
       return share(arm.sums);
     case "ratio":
       return ratioOfTotals(arm);
+    case "quantile":
+      return quantileLevel(arm);
+    case "adjusted":
+      return adjustedLevel(arm);
     default:
       return unknown(arm);
   }

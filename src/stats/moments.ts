@@ -44,10 +44,10 @@ export function moments(sums: PowerSums, noise = 0): Moments {
   };
 }
 
-/** The exact total over n; for a score, which has none, the first power sum's. */
-function mean({ n, total, powers, scale }: PowerSums): number {
+/** The exact total over n; where there is none, as for a score, the first power sum's. */
+function mean({ n, total, powers, pivot, scale }: PowerSums): number {
   if (total !== null) return nearestNumber(fraction(total, BigInt(n) * NANO));
-  return nearestNumber(fraction(powers[0], BigInt(n) * ONE)) * scale;
+  return Number(pivot) + nearestNumber(fraction(powers[0], BigInt(n) * ONE)) * scale;
 }
 
 /** m_k of u, times (n 2^120)^k: whole numbers. Null where not above the rounding bound. */

@@ -2,95 +2,66 @@ import type { Arm } from "../cells/types.ts";
 import { isAbsent } from "./absent.ts";
 import { armFigures } from "./arm-figures.ts";
 import { estimateOf } from "./difference.ts";
-import type { ShapedArm } from "./expansion.ts";
 import { type LargestShare, largestShare } from "./largest-share.ts";
 import { level } from "./level.ts";
 import { shapedArm } from "./shaped-arm.ts";
-import { type SkewCorrected, skewCorrected, skewCorrectedRelative } from "./skew-corrected.ts";
+import { type SkewCorrected, skewCorrected } from "./skew-corrected.ts";
 import { type Tails, tails } from "./tails.ts";
-import type { Absent, ArmFigures, Relative } from "./types.ts";
-import { unitsByRule, unitsForTails } from "./units-for-tails.ts";
+import type { Absent, ArmFigures } from "./types.ts";
+import { type ArmFirmness, unitsByRule, unitsForTails } from "./units-for-tails.ts";
 
-/** Whether the normal approximation is good enough for one contrast, and what to read where it is not. */
+/** Whether the normal approximation is good enough for one contrast (METHODS 3). */
 export interface Normality {
   readonly tails: Tails;
-  readonly skewCorrected: SkewCorrected & { readonly relative: Relative | Absent };
-  /** Null: it cannot be told from these data. */
+  /** Units of all arms from which on both tails are near; null: cannot be told from these data. */
   readonly unitsForTails: number | null;
+  /** Rules of thumb, units for each arm. */
   readonly unitsByRule: { readonly kohavi: number; readonly cochran: number };
-  /** Null for a proportion, which always has a variance, and for an arm without spread. */
-  readonly largestShare: { readonly control: LargestShare | null; readonly variant: LargestShare | null };
-}
-
-/** One side of a contrast as the question needs it: of an adjusted one, all are those of y - theta (x - X). */
-export interface NormalityArm {
-  /** The level as a double. */
-  readonly level: number;
-  readonly shape: ShapedArm;
-  readonly figures: ArmFigures;
+  /** The skew-corrected interval of the difference, whichever counts. */
+  readonly corrected: SkewCorrected;
+  /** How much of each arm's spread one unit holds. Null for shares, whose variance always exists. */
+  readonly largest: { readonly control: LargestShare | null; readonly variant: LargestShare | null } | null;
 }
 
 /**
- * All of METHODS 3 that power sums tell.
- * @param difference variant's level minus control's, exact and rounded once
- * @param z the normal critical value of the interval that decides, also where that is Welch's
- * @param units all analysed units of all arms
- * @param alike `armsAlike` of the contrast's buckets; 0 where there are none
- * @param isShare of a proportion
+ * What the two arms' own moments say of the normal interval of their contrast.
+ * @param z the critical value that counts, on the normal's scale
+ * @param alike how far the arms look like one distribution, 1 to 0 (`armsAlike`)
+ * @param units all analysed units of all arms, which `unitsForTails` grows in proportion
+ * @returns `not-for-quantiles`; else as `shapedArm` and `tails`
  */
-export function normality(
-  control: NormalityArm,
-  variant: NormalityArm,
-  difference: number,
-  z: number,
-  units: number,
-  alike: number,
-  isShare: boolean,
-): Normality | Absent {
-  const [c, t] = [control.shape, variant.shape];
+export function normality(control: Arm, variant: Arm, z: number, alike: number, units: number): Normality | Absent {
+  if (control.kind === "quantile" || variant.kind === "quantile") return { absent: "not-for-quantiles" };
+  const [c, t] = [shapedArm(control), shapedArm(variant)];
+  if (isAbsent(c)) return c;
+  if (isAbsent(t)) return t;
   const found = tails(c, t, z);
-  const corrected = skewCorrected(c, t, difference, z, alike);
   if (isAbsent(found)) return found;
+  const [ofControl, ofVariant] = [level(control), level(variant)];
+  if (isAbsent(ofControl) || isAbsent(ofVariant)) throw new Error("a shape came of an arm without a level");
+  const corrected = skewCorrected(c, t, estimateOf(ofControl, ofVariant), z, alike);
   if (isAbsent(corrected)) return corrected;
-  const shares = { control: largestShare(control.figures), variant: largestShare(variant.figures) };
-  const firm = ({ n, skewness }: ShapedArm, share: LargestShare | null) => ({
-    n,
-    skewness,
-    ofCubes: share?.ofCubes ?? 0,
-  });
+  const figures = { control: armFigures(control), variant: armFigures(variant) };
+  const largest = { control: largestShare(figures.control), variant: largestShare(figures.variant) };
   return {
     tails: found,
-    skewCorrected: {
-      ...corrected,
-      relative: skewCorrectedRelative(c, t, { control: control.level, difference }, z, alike),
-    },
-    unitsForTails: unitsForTails(found, units, firm(c, shares.control), firm(t, shares.variant)),
+    corrected,
+    unitsForTails: unitsForTails(
+      found,
+      units,
+      firmness(figures.control, largest.control),
+      firmness(figures.variant, largest.variant),
+    ),
     unitsByRule: unitsByRule(c.skewness, t.skewness),
-    largestShare: isShare ? { control: null, variant: null } : shares,
+    largest: isShare(control) ? null : largest,
   };
 }
 
-/** The same of two arms of an unadjusted mean, proportion or ratio of totals. */
-export function normalityOfArms(
-  control: Arm,
-  variant: Arm,
-  z: number,
-  units: number,
-  alike: number,
-): Normality | Absent {
-  const [c, t] = [level(control), level(variant)];
-  if (isAbsent(c)) return c;
-  if (isAbsent(t)) return t;
-  const [ofControl, ofVariant] = [shapedArm(control), shapedArm(variant)];
-  if (isAbsent(ofControl)) return ofControl;
-  if (isAbsent(ofVariant)) return ofVariant;
-  return normality(
-    { level: c.value, shape: ofControl, figures: armFigures(control) },
-    { level: t.value, shape: ofVariant, figures: armFigures(variant) },
-    estimateOf(c, t),
-    z,
-    units,
-    alike,
-    control.kind === "proportion",
-  );
+/** An arm whose units do not vary has no cubes to be ruled by. */
+function firmness({ units, skewness }: ArmFigures, largest: LargestShare | null): ArmFirmness {
+  return { n: units, skewness: skewness ?? 0, ofCubes: largest?.ofCubes ?? 0 };
+}
+
+function isShare(arm: Arm): boolean {
+  return arm.kind === "proportion" || (arm.kind === "adjusted" && arm.summary === "proportion");
 }

@@ -33,9 +33,9 @@ type Control = OrderedArm & { readonly low: bigint };
 
 function lowerEnd(c: Control, t: bigint, low: bigint): number | null {
   if (low < 0n) return lower(terms(c.at, t, c.at - c.low, t - low));
-  if (c.high === null) return null;
-  // At l_t = 0 the ratio 0 is just not rejected.
-  return low === 0n ? -1 : lower(terms(c.at, t, c.high - c.at, t - low));
+  // At l_t = 0 the ratio 0 is just not rejected, wherever the control ends.
+  if (low === 0n) return -1;
+  return c.high === null ? null : lower(terms(c.at, t, c.high - c.at, t - low));
 }
 
 function upperEnd(c: Control, t: bigint, high: bigint): number | null {

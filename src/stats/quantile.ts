@@ -1,5 +1,4 @@
 import { fraction, NANO, nearestNumber } from "../cells/index.ts";
-import { normalCritical } from "./normal.ts";
 import { type OrderedArm, reach } from "./order-statistics.ts";
 import { quantileP } from "./quantile-p.ts";
 import { quantileRanks, type Ranks } from "./quantile-ranks.ts";
@@ -27,7 +26,8 @@ export interface QuantileContrast {
  * the interval wider than asked, not narrower. Relative by MOVER for a ratio; p: the alpha at which an end touches 0.
  * @param units with a value
  * @param q as `quantileRanks` takes it
- * @param alpha in (0, 1): low and high are held at it; p is of this contrast alone
+ * @param critical above 0, on the normal's scale, of one contrast or of several at once: low and high are held at it, and p
+ *   is of this contrast alone
  * @returns no standard error and no z, they do not exist. `no-units`; `few-for-rank` where neither end exists; `no-width`
  *   where all of l, Q and u agree in each arm: such an interval would claim to know the difference exactly
  *
@@ -37,9 +37,8 @@ export interface QuantileContrast {
 export function* quantileContrast(
   units: { readonly control: number; readonly variant: number },
   q: string,
-  alpha: number,
+  critical: number,
 ): RankSearch<QuantileContrast> {
-  const critical = normalCritical(alpha);
   const known: Known = { control: new Map(), variant: new Map() };
   const ranks = {
     control: units.control === 0 ? null : quantileRanks(units.control, q, critical),

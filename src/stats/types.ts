@@ -15,8 +15,12 @@ export interface Absent {
     | "no-width"
     /** What is adjusted for does not vary within the arms. */
     | "same-covariate"
+    /** No unit has a value of what is adjusted for. */
+    | "no-covariate"
     /** A worthwhile effect is to be shown, and the plan expects none above it. */
     | "no-expected-effect"
+    /** What rests on a variance, asked of a quantile. */
+    | "not-for-quantiles"
     | "not-built";
 }
 
@@ -43,7 +47,7 @@ export interface ArmFigures {
   readonly largest: number | null;
 }
 
-export type Method = "normal" | "welch" | "score" | "quantile";
+export type Method = "normal" | "welch" | "score" | "skew-corrected" | "quantile";
 
 /** Variant minus control, in the metric's unit. z, p pointwise; low, high the ones that decide (METHODS 2). */
 export interface Difference {

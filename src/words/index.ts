@@ -1,5 +1,6 @@
 // numbers
 
+export { atLeast, casesText, spanText } from "./cases.ts";
 export { chanceText, pText } from "./chance.ts";
 // nouns and days
 export { type Day, dateSpan, dateText } from "./dates.ts";
@@ -22,4 +23,5 @@ export {
 export { capital, list, plural, quoted } from "./nouns.ts";
 export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
 export { percent, planPercent, signedPercent } from "./percent.ts";
+export { percentile } from "./percentile.ts";
 export { type Rates, rates } from "./rate.ts";

@@ -173,6 +173,45 @@ describe("the report's look", () => {
     }
   });
 
+  it("draws each choice under one axis, the plan's own filled and its estimate through all rows, at every width", async () => {
+    for (const width of WIDTHS) {
+      await open("adopt", { width }, async (page) => {
+        const { rows, zero, five } = await page.evaluate(() => {
+          const figure = document.querySelector(".choices");
+          const tick = (text: string) => {
+            const label = [...(figure?.querySelectorAll(".axis text") ?? [])].find((one) => one.textContent === text);
+            if (label === undefined) throw new Error(`the axis has no ${text}`);
+            const box = label.getBoundingClientRect();
+            return box.left + box.width / 2;
+          };
+          const rows = [...(figure?.querySelectorAll(":scope > table tbody tr") ?? [])].map((row) => {
+            const lines = [...row.querySelectorAll('svg line[stroke="currentColor"]')].map((one) =>
+              one.getBoundingClientRect(),
+            );
+            const interval = lines.sort((a, b) => b.width - a.width)[0];
+            return {
+              from: interval?.left ?? 0,
+              to: interval?.right ?? 0,
+              dotted: row.querySelector('svg line[stroke-dasharray="1,3"]')?.getBoundingClientRect().left ?? 0,
+              fill: getComputedStyle(row.querySelector("svg path[d]:not([d^='M0,0'])") ?? row).fill,
+            };
+          });
+          return { rows, zero: tick("0"), five: tick("+5%") };
+        });
+        const percent = (x: number) => (5 * (x - zero)) / (five - zero);
+        // PAGES: +6.5% to +13.7%, estimate +10.0%
+        expect(percent(rows[0]?.from ?? 0)).toBeCloseTo(6.5, 0);
+        expect(percent(rows[0]?.to ?? 0)).toBeCloseTo(13.7, 0);
+        expect(percent(rows[2]?.from ?? 0)).toBeCloseTo(4.5, 0);
+        for (const { dotted } of rows) expect(percent(dotted)).toBeCloseTo(10, 0);
+        expect(rows.map(({ fill }) => fill)).toEqual([
+          "rgb(29, 27, 24)",
+          ...rows.slice(1).map(() => "rgb(255, 254, 251)"),
+        ]);
+      });
+    }
+  });
+
   it("sets no letter of the drawing under 9 px, at any width", async () => {
     for (const width of WIDTHS) {
       const size = await open("several variants", { width }, (page) =>

@@ -6,52 +6,12 @@ import type { Arm, PowerSums } from "../../src/cells/types.ts";
 import type { CellTable, ScoreTable } from "../../src/engine/types.ts";
 import type { Summary } from "../../src/plan/types.ts";
 import { metricOf } from "../checks/make.ts";
-import { nanoOf, sumsTogether } from "../stats/arms.ts";
-
-/** One unit: its variant, its bucket, its value. */
-type Unit = readonly [variant: number, bucket: number, value: number];
+import { sumsTogether } from "../stats/arms.ts";
+import { cellTable, highAndLow, noScores, type Unit } from "./tables.ts";
 
 const metric = (summary: Summary) => metricOf({ name: "Fare", summary });
 
 const cellsOf = (of: CellTable, ratio: ArmCells["ratio"] = null): ArmCells => ({ of, ratio });
-
-/** Cells as an engine gives them, in any order of variant and bucket; the sums come from the tests' own power sums. */
-function cellTable(units: readonly Unit[]): CellTable {
-  const groups = [...new Set(units.map(([variant, bucket]) => `${variant} ${bucket}`))].map((key) => {
-    const [variant = 0, bucket = 0] = key.split(" ").map(Number);
-    return { variant, bucket, values: units.filter(([v, b]) => v === variant && b === bucket).map(([, , x]) => x) };
-  });
-  const sums = sumsTogether(groups.map(({ values }) => values));
-  return {
-    pivot: sums[0]?.pivot ?? "0",
-    scale: sums[0]?.scale ?? 1,
-    variant: groups.map(({ variant }) => variant),
-    bucket: groups.map(({ bucket }) => bucket),
-    n: sums.map(({ n }) => n),
-    ...highAndLow(sums),
-    total: sums.map(({ total }) => total ?? 0n),
-    smallest: sums.map(({ smallest }) => nanoOf(smallest ?? 0)),
-    largest: sums.map(({ largest }) => nanoOf(largest ?? 0)),
-  };
-}
-
-/** S_k = high 2^60 + low, with a low that need not lie under 2^60: the engine's is a sum over units. */
-function highAndLow(sums: readonly PowerSums[]) {
-  const high = (k: 0 | 1 | 2 | 3) => sums.map(({ powers }) => (powers[k] >> 60n) - 1n);
-  const low = (k: 0 | 1 | 2 | 3) => sums.map(({ powers }, i) => powers[k] - ((high(k)[i] ?? 0n) << 60n));
-  return {
-    high1: high(0),
-    high2: high(1),
-    high3: high(2),
-    high4: high(3),
-    low1: low(0),
-    low2: low(1),
-    low3: low(2),
-    low4: low(3),
-  };
-}
-
-const noScores: ScoreTable = { scale: 1, variant: [], bucket: [], n: [], ...highAndLow([]), smallest: [], largest: [] };
 
 const unit = fc.tuple(
   fc.nat(2),

@@ -166,6 +166,7 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
   return {
     metric,
     leftOut,
+    notZero: leftOut.map(() => 0),
     countedRows: 0,
     countedWithoutNumber: 0,
     cap: null,

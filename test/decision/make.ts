@@ -1,3 +1,4 @@
+import { NO_POWER } from "../../src/decision/power.ts";
 import type { Effect } from "../../src/decision/types.ts";
 import { placed } from "../../src/decision/zones.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
@@ -77,8 +78,14 @@ export function effectOf(metric: Metric, contrast: Contrast, variant = "calendar
     variant,
     control: "list",
     contrast,
+    adjusted: null,
+    notAdjusted: null,
     pAdjusted: null,
+    pHolm: null,
     ...placed(metric, contrast),
+    power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
 }
 

@@ -3,7 +3,8 @@ import { type ColumnTable, desc, from, op, escape as rowwise } from "arquero";
 import type { Aggregate, Metric, Part, Plan } from "../../src/plan/types.ts";
 import { rowAt } from "./ledger.ts";
 import { ascending, nanoOf, readDecimal } from "./number.ts";
-import { partMatches } from "./span.ts";
+import { orderedArm, zFor } from "./quantile.ts";
+import { DAY_US, partMatches } from "./span.ts";
 import type { Clock } from "./time.ts";
 import type { OracleMetric, Row, UnitValue } from "./types.ts";
 import type { Unit } from "./units.ts";
@@ -16,15 +17,18 @@ interface Taken {
   readonly value: bigint | null;
 }
 
-/**
- * Rule 8 for one metric.
- * @param counted table with `at` and `unit` of the rows in follow-up of analysed units
- */
+/** Tables with `at` and `unit` of the rows of analysed units: in follow-up, and before enrolment. */
+export interface RowTables {
+  readonly counted: ColumnTable;
+  readonly before: ColumnTable;
+}
+
+/** Rules 8 and 9 for one metric. */
 export function metricOf(
   plan: Plan,
   metric: Metric,
   rows: readonly Row[],
-  counted: ColumnTable,
+  { counted, before: earlier }: RowTables,
   analysed: readonly Unit[],
   clock: Clock,
 ): OracleMetric {
@@ -36,11 +40,14 @@ export function metricOf(
 
   const of = takenOf(metric.of, rows, counted, clock);
   const per = metric.per === null ? null : takenOf(metric.per, rows, counted, clock);
+  const covariate = covariateOf(metric, rows, earlier, analysed, clock);
   const before = analysed.flatMap((unit) => {
     const value = takenValue(metric, of.get(unit.unit));
-    return value === null ? [] : [unitValue(unit, value, per === null ? null : takenValue(metric, per.get(unit.unit)))];
+    if (value === null) return [];
+    return [unitValue(unit, value, per === null ? null : takenValue(metric, per.get(unit.unit)), covariate(unit))];
   });
   const cap = capOf(metric, before);
+  const { quantile: q } = metric;
   return {
     metric: metric.name,
     leftOut: byVariant(plan, (variant) => ofVariant(analysed, variant).length - ofVariant(before, variant).length),
@@ -54,6 +61,10 @@ export function metricOf(
             units: byVariant(plan, (variant) => ofVariant(before, variant).filter(({ of }) => of > cap).length),
           },
     values: before.map((value) => (cap !== null && value.of > cap ? { ...value, of: cap } : value)),
+    quantile:
+      q === null
+        ? null
+        : plan.variants.map((_, at) => orderedArm(armValues(before, at), q, zFor(intervalsAtOnce(plan, metric)))),
   };
 }
 
@@ -132,9 +143,36 @@ function takenValue(metric: Metric, taken: Taken | undefined): bigint | null {
   return metric.withoutRows === "leave-out" ? null : 0n;
 }
 
-function unitValue(unit: Unit, of: bigint, per: bigint | null): UnitValue {
+/**
+ * A unit's covariate: a column's value on its enrolling row, or the metric's quantity in the days before enrolment, the
+ * first instant inside and enrolment outside, 0 without rows or numbers.
+ */
+function covariateOf(
+  { adjustFor, of, summary }: Metric,
+  rows: readonly Row[],
+  earlier: ColumnTable,
+  analysed: readonly Unit[],
+  clock: Clock,
+): (unit: Unit) => bigint | null {
+  if (adjustFor === null) return () => null;
+  if (adjustFor.kind === "column") return ({ enrolling }) => enrolling?.number(adjustFor.column) ?? null;
+  const from = new Map(
+    analysed.map(({ unit, enrolledUs }) => [
+      unit,
+      (enrolledUs ?? 0n) - BigInt(Math.round(adjustFor.days * Number(DAY_US))),
+    ]),
+  );
+  const inside = earlier.filter(
+    rowwise((row: { at: number; unit: string }) => (rowAt(rows, row.at).us ?? 0n) >= (from.get(row.unit) ?? 0n)),
+  );
+  const taken = takenOf(of, rows, inside, clock);
+  if (summary === "proportion") return ({ unit }) => (taken.has(unit) ? ONE : 0n);
+  return ({ unit }) => taken.get(unit)?.value ?? 0n;
+}
+
+function unitValue(unit: Unit, of: bigint, per: bigint | null, x: bigint | null): UnitValue {
   if (unit.variant === null) throw new Error(`an analysed unit has no variant: ${unit.unit}`);
-  return { unit: unit.unit, variant: unit.variant, bucket: bucketOf(unit.unit), of, per };
+  return { unit: unit.unit, variant: unit.variant, bucket: bucketOf(unit.unit), of, per, x };
 }
 
 /** First two bytes of md5, little-endian, modulo 1024 (DESIGN 5). */
@@ -166,6 +204,13 @@ export function quantile(values: readonly bigint[], q: string): bigint {
   if (found === undefined) throw new Error(`no ${place}-th smallest of ${values.length} values`);
   return found;
 }
+
+/** What decides is held for all variants at once, a secondary metric by itself. */
+export const intervalsAtOnce = (plan: Plan, { role }: Metric): number =>
+  role === "secondary" ? 1 : plan.variants.length - 1;
+
+export const armValues = (values: readonly UnitValue[], variant: number): bigint[] =>
+  ofVariant(values, variant).map(({ of }) => of);
 
 export const byVariant = (plan: Plan, count: (variant: number) => number): number[] =>
   plan.variants.map((_, at) => count(at));

@@ -42,6 +42,7 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
   const unreadable = files.reduce((sum, file) => sum + file.unreadable, 0);
   const analysed = units.filter(({ line }) => line === "analysed");
   const counted = endedTable.filter((row) => row.line === "in-follow-up");
+  const before = endedTable.filter((row) => row.line === "before-enrolment");
   const rowsOn = counts(endedTable);
 
   const result: OracleResult = {
@@ -57,7 +58,7 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
     facts: factsOf(plan, rows, ended, units, end),
-    metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, counted, analysed, clock)),
+    metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
   };
   return { clock, rows, ended, units, result };
 }

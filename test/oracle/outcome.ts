@@ -1,7 +1,8 @@
-import type { ByVariant, CellTable, Reduction } from "../../src/engine/types.ts";
+import type { ByVariant, CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { ascending, nanoOf, nanoText } from "./number.ts";
-import type { OracleFacts, OracleResult, UnitValue } from "./types.ts";
+import type { OracleQuantile } from "./quantile.ts";
+import type { OracleFacts, OracleMetric, OracleResult, UnitValue } from "./types.ts";
 
 /**
  * What the oracle's result and an engine's reduction have in common, as plain JSON: the exact figures.
@@ -22,11 +23,29 @@ export interface MetricOutcome {
   readonly countedRows: number;
   readonly countedWithoutNumber: number;
   readonly cap: { readonly value: string; readonly units: ByVariant } | null;
+  /** Of a quantile, one an arm: its level and the ends of its interval. */
+  readonly quantile: readonly (QuantileOutcome | null)[] | null;
   /** One an arm, in plan order. */
   readonly of: readonly ArmOutcome[];
   readonly per: readonly ArmOutcome[] | null;
+  /** The covariate over the units that have one and a value, and the metric's values of these units. */
+  readonly covariate: readonly CovariateOutcome[] | null;
   /** The same by variant and bucket, "0/517". */
   readonly buckets: Readonly<Record<string, ArmOutcome>>;
+}
+
+/** Decimals as text, exact; null where the arm has no such rank. */
+export interface QuantileOutcome {
+  readonly at: string;
+  readonly low: string | null;
+  readonly high: string | null;
+}
+
+export interface CovariateOutcome {
+  readonly x: ArmOutcome;
+  readonly n: number;
+  readonly totalY: string;
+  readonly totalX: string;
 }
 
 /** Decimals as text, exact; null where there is no value. */
@@ -53,8 +72,10 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
           metric.cap === null || metric.values.length === 0
             ? null
             : { value: nanoText(metric.cap.value), units: metric.cap.units },
+        quantile: metric.quantile?.map(quantileOf) ?? null,
         of: armsOf(plan, metric.values),
         per: isRatio ? armsOf(plan, per) : null,
+        covariate: isAdjusted(plan, metric.metric) ? covariatesOf(plan, metric.values) : null,
         buckets: Object.fromEntries(
           [...new Set(metric.values.map(bucketKey))].map((key) => [
             key,
@@ -66,11 +87,16 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
   };
 }
 
-export function outcomeOfEngine(plan: Plan, reduction: Reduction): Outcome {
+/** @param quantiles one a metric, null where it is none; as in `OracleMetric` */
+export function outcomeOfEngine(
+  plan: Plan,
+  reduction: Reduction,
+  quantiles: readonly OracleMetric["quantile"][],
+): Outcome {
   return {
     ...ledgerOf(reduction),
     facts: factsOf(reduction.facts),
-    metrics: reduction.metrics.map((metric) => {
+    metrics: reduction.metrics.map((metric, m) => {
       const cells = cellsOf(metric.of);
       return {
         metric: metric.metric,
@@ -81,12 +107,37 @@ export function outcomeOfEngine(plan: Plan, reduction: Reduction): Outcome {
           metric.cap === null || cells.length === 0
             ? null
             : { value: nanoText(nanoOf(metric.cap.value)), units: metric.cap.units },
+        quantile: quantiles[m]?.map(quantileOf) ?? null,
         of: mergedArms(plan, cells),
         per: metric.ratio === null ? null : mergedArms(plan, cellsOf(metric.ratio.per)),
+        covariate: metric.covariate === null ? null : covariateCells(plan, metric.covariate),
         buckets: Object.fromEntries(cells.map((cell) => [bucketKey(cell), merged([cell])])),
       };
     }),
   };
+}
+
+const isAdjusted = (plan: Plan, metric: string) =>
+  plan.metrics.some(({ name, adjustFor }) => name === metric && adjustFor !== null);
+
+function covariatesOf(plan: Plan, values: readonly UnitValue[]): CovariateOutcome[] {
+  return plan.variants.map((_, at) => {
+    const own = values.filter(({ variant, x }) => variant === at && x !== null);
+    const xs = own.map((value) => ({ ...value, of: value.x ?? 0n }));
+    const total = (of: readonly UnitValue[]) => nanoText(of.reduce((sum, value) => sum + value.of, 0n));
+    return { x: armOf(xs), n: own.length, totalY: total(own), totalX: total(xs) };
+  });
+}
+
+function covariateCells(plan: Plan, { x, joint }: NonNullable<MetricCells["covariate"]>): CovariateOutcome[] {
+  const sum = (at: number, column: readonly bigint[]) =>
+    nanoText(column.reduce((total, value, row) => (joint.variant[row] === at ? total + value : total), 0n));
+  return mergedArms(plan, cellsOf(x)).map((arm, at) => ({
+    x: arm,
+    n: joint.n.reduce((total, n, row) => (joint.variant[row] === at ? total + n : total), 0),
+    totalY: sum(at, joint.totalY),
+    totalX: sum(at, joint.totalX),
+  }));
 }
 
 function ledgerOf(
@@ -118,6 +169,11 @@ function factsOf(facts: OracleFacts): Record<string, unknown> {
     lastEnrolledUs: instant(facts.lastEnrolledUs),
     logEndUs: instant(facts.logEndUs),
   };
+}
+
+function quantileOf(found: OracleQuantile | null): QuantileOutcome | null {
+  const text = (value: bigint | null) => (value === null ? null : nanoText(value));
+  return found === null ? null : { at: nanoText(found.at), low: text(found.low), high: text(found.high) };
 }
 
 function armsOf(plan: Plan, values: readonly UnitValue[]): ArmOutcome[] {

@@ -3,7 +3,7 @@ import { isMap, isScalar, isSeq, type Node } from "yaml";
 /** Columns that a plan names other than as time, event or variant, in the order of first mention in its text. */
 export interface NamedColumns {
   readonly columns: readonly string[];
-  /** Of these, the ones that a metric sums or takes max, min, first or last of. */
+  /** Of these, the ones that a metric sums, takes max, min, first or last of, or adjusts for. */
   readonly numericColumns: readonly string[];
 }
 
@@ -31,6 +31,7 @@ function mentionsIn(node: Node | null, path: readonly string[]): Mention[] {
     const column = String(value.value);
     const inside = path.at(-1);
     if (inside === "columns" && (key === "unit" || key === "event-id")) return [{ column, numeric: false }];
+    if (inside === "adjust-for" && key === "column") return [{ column, numeric: true }];
     if ((inside === "of" || inside === "per") && NUMERIC.includes(key)) return [{ column, numeric: true }];
     return [];
   });

@@ -87,6 +87,7 @@ function metricOf(node: Node): Metric {
   const cap = at(node, "cap");
   const quantile = textAt(cap, "quantile");
   const limit = textAt(cap, "at");
+  const share = textAt(node, "quantile");
   const per = at(node, "per");
   return {
     name: textAt(node, "name") ?? "",
@@ -94,7 +95,7 @@ function metricOf(node: Node): Metric {
     summary: textAt(node, "summary") as Metric["summary"],
     of: partOf(at(node, "of")),
     per: per === null ? null : partOf(per),
-    quantile: null,
+    quantile: share === null ? null : decimal(share),
     unitOfMeasure: textAt(node, "in"),
     goodIs: textAt(node, "good-is") === "lower" ? "lower" : "higher",
     worthwhile: amountOf(at(node, "worthwhile")),
@@ -106,9 +107,16 @@ function metricOf(node: Node): Metric {
         : limit !== null
           ? { kind: "at", at: decimal(limit) }
           : null,
-    adjustFor: null,
+    adjustFor: covariateOf(at(node, "adjust-for")),
     withoutRows: textAt(node, "without-rows") === "leave-out" ? "leave-out" : "zero",
   };
+}
+
+function covariateOf(node: Node | null): Metric["adjustFor"] {
+  const column = textAt(node, "column");
+  if (column !== null) return { kind: "column", column };
+  const days = numberAt(node, "days-before");
+  return days === null ? null : { kind: "days-before", days };
 }
 
 const WITH_COLUMN = ["sum", "max", "min", "first", "last"] as const;

@@ -1,4 +1,5 @@
 import type { ByVariant, Facts } from "../../src/engine/types.ts";
+import type { OracleQuantile } from "./quantile.ts";
 import type { Cell } from "./where.ts";
 
 /** One file of the log as text cells: what the oracle starts from. */
@@ -57,6 +58,8 @@ export interface UnitValue {
   readonly of: bigint;
   /** A ratio's denominator. */
   readonly per: bigint | null;
+  /** The covariate; null where the plan adjusts for none, or the unit has no value of it. */
+  readonly x: bigint | null;
 }
 
 export interface OracleMetric {
@@ -66,6 +69,8 @@ export interface OracleMetric {
   readonly countedWithoutNumber: number;
   readonly cap: { readonly value: bigint; readonly units: ByVariant } | null;
   readonly values: readonly UnitValue[];
+  /** Of a quantile, one an arm, at the critical value of the metric's intervals; null without values. */
+  readonly quantile: readonly (OracleQuantile | null)[] | null;
 }
 
 export interface OracleResult {

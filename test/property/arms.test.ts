@@ -1,6 +1,8 @@
 import { describe, expect, it } from "vitest";
 import type { Metric, Plan } from "../../src/plan/types.ts";
+import { quantile } from "../oracle/metrics.ts";
 import { momentsOf, quotient, scoresOf } from "../oracle/moments.ts";
+import { ascending } from "../oracle/number.ts";
 import { oracle } from "../oracle/oracle.ts";
 import { planFromYaml } from "../oracle/plan.ts";
 import { randomCase, rawFiles, rawLists, writeCase } from "../oracle/random/case.ts";
@@ -73,6 +75,7 @@ function wrongArm(metric: Metric, oracleMetric: OracleMetric, variant: number, a
     ofs.reduce((sum, x) => sum + x, 0n),
     ONE,
   );
+  if (metric.quantile !== null) return wrongQuantile(metric.quantile, ofs, arm);
   const scores = metric.per === null ? { values: ofs, one: ONE } : scoresOf(pairs);
   if (scores === null) return near("mean", arm.mean, null, 0);
   const moments = momentsOf(scores.values, scores.one);
@@ -91,6 +94,19 @@ function wrongArm(metric: Metric, oracleMetric: OracleMetric, variant: number, a
     ...near("sd", arm.sd, sd, (sd ?? 0) * 1e-11 + widest * 1e-12, mayBeNull),
     ...near("skewness", arm.skewness, moments.g1, 1e-10 + 1e-14 * narrow ** 3, mayBeNull),
     ...near("kurtosis", arm.kurtosis, moments.g2, 1e-10 + 1e-14 * narrow ** 4, mayBeNull),
+  ];
+}
+
+/** A quantile's mean is the quantile; it has no spread and no total. */
+function wrongQuantile(q: string, values: readonly bigint[], arm: Arm): string[] {
+  const sorted = [...values].sort(ascending).map((x) => quotient(x, ONE));
+  // The report has twelve digits.
+  const same = (what: string, found: number | null, exact: number) => near(what, found, exact, 1e-11 * Math.abs(exact));
+  return [
+    ...same("mean", arm.mean, quotient(quantile(values, q), ONE)),
+    ...same("smallest", arm.smallest, sorted[0] ?? 0),
+    ...same("largest", arm.largest, sorted.at(-1) ?? 0),
+    ...(["total", "sd", "skewness", "kurtosis"] as const).flatMap((what) => near(what, arm[what], null, 0)),
   ];
 }
 

@@ -2,11 +2,12 @@ import type { Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { outcomeOfEngine, outcomeOfOracle } from "../oracle/outcome.ts";
 import type { OracleResult } from "../oracle/types.ts";
+import type { EngineRun } from "./run.ts";
 import { wrongSums } from "./sums.ts";
 
 /** Where an engine's reduction departs from the oracle's, one line each; none where they agree. */
-export function departures(plan: Plan, oracle: OracleResult, reduction: Reduction): string[] {
-  const exact = unequal(outcomeOfOracle(plan, oracle), outcomeOfEngine(plan, reduction), "");
+export function departures(plan: Plan, oracle: OracleResult, { reduction, quantiles }: EngineRun): string[] {
+  const exact = unequal(outcomeOfOracle(plan, oracle), outcomeOfEngine(plan, reduction, quantiles), "");
   if (exact.length > 0) return exact;
   const unbalanced = sums(reduction);
   if (unbalanced.length > 0) return unbalanced;

@@ -34,7 +34,15 @@ function wrong(change: Partial<CellTable>): string[] {
     countedRows: 3,
     countedWithoutNumber: 0,
     cap: null,
-    values: [1n, 2n, 4n].map((x) => ({ unit: `u${x}`, variant: 0, bucket: 0, of: x * 1_000_000_000n, per: null })),
+    values: [1n, 2n, 4n].map((x) => ({
+      unit: `u${x}`,
+      variant: 0,
+      bucket: 0,
+      of: x * 1_000_000_000n,
+      per: null,
+      x: null,
+    })),
+    quantile: null,
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);

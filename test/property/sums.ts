@@ -25,6 +25,7 @@ export function wrongSums(plan: Plan, oracle: OracleMetric, cells: MetricCells):
           arms.map((arm) => arm.map(({ per }) => per ?? 0n)),
         ).map((line) => `per: ${line}`)),
     ...(cells.ratio === null ? [] : wrongScores(cells.ratio.score, arms).map((line) => `score: ${line}`)),
+    ...(cells.covariate === null ? [] : wrongCovariate(cells.covariate, arms)),
   ];
   return wrong.map((line) => `${oracle.metric}, ${line}`);
 }
@@ -62,6 +63,52 @@ function wrongPart(table: CellTable, arms: readonly (readonly bigint[])[]): stri
     ),
     ...distances.flatMap((arm, variant) => wrongMoments(table, variant, arms[variant] ?? [], arm.map(size))),
   ];
+}
+
+const JOINT = [
+  { jk: "10", j: 1n, k: 0n },
+  { jk: "01", j: 0n, k: 1n },
+  { jk: "20", j: 2n, k: 0n },
+  { jk: "11", j: 1n, k: 1n },
+  { jk: "02", j: 0n, k: 2n },
+] as const;
+
+/** The covariate's own sums, and the joint ones: a product of two is rounded three times. */
+function wrongCovariate(
+  { x, joint }: NonNullable<MetricCells["covariate"]>,
+  arms: readonly (readonly { readonly of: bigint; readonly x: bigint | null }[])[],
+): string[] {
+  const having = arms.map((arm) => arm.flatMap((unit) => (unit.x === null ? [] : [{ y: unit.of, x: unit.x }])));
+  const [fromY, fromX] = [nanoOf(joint.pivots[0]), nanoOf(joint.pivots[1])];
+  const [byY, byX] = [scaleOf(joint.scales[0]), scaleOf(joint.scales[1])];
+  return [
+    ...wrongPart(
+      x,
+      having.map((arm) => arm.map((unit) => unit.x)),
+    ).map((line) => `covariate: ${line}`),
+    ...having.flatMap((arm, variant) =>
+      JOINT.flatMap(({ jk, j, k }) => {
+        const terms = arm.map((unit) => ((unit.y - fromY) * byY.bottom) ** j * ((unit.x - fromX) * byX.bottom) ** k);
+        const divisor = byY.top ** j * byX.top ** k;
+        const exact = terms.reduce((sum, term) => sum + term, 0n);
+        const absolute = terms.reduce((sum, term) => sum + size(term), 0n);
+        const allowed = ((absolute * UNIT) / divisor / 2n ** 53n) * 4n + ROUNDED_LOW * BigInt(arm.length) + 2n;
+        const found = joint.variant.reduce(
+          (sum, at, row) =>
+            at === variant ? sum + (joint[`high${jk}`][row] ?? 0n) * 2n ** 60n + (joint[`low${jk}`][row] ?? 0n) : sum,
+          0n,
+        );
+        const off = size(found - (exact * UNIT) / divisor);
+        return off <= allowed ? [] : [`joint S${jk} of variant ${variant} is off by ${off} of ${allowed} allowed`];
+      }),
+    ),
+  ];
+}
+
+/** 10^9 times a power of two, as top over bottom. */
+function scaleOf(scale: number): { readonly top: bigint; readonly bottom: bigint } {
+  const exponent = Math.log2(scale);
+  return exponent >= 0 ? { top: ONE << BigInt(exponent), bottom: 1n } : { top: ONE, bottom: 1n << BigInt(-exponent) };
 }
 
 /** scale / 2 < distance <= scale, but for the last bit of a double. */

@@ -1,9 +1,12 @@
+import { withFamilies } from "../../src/decision/families.ts";
 import { placed } from "../../src/decision/index.ts";
+import { analysedUnits, NO_POWER, withPower } from "../../src/decision/power.ts";
 import type { Effect, Zone } from "../../src/decision/types.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import type { ReportInputs } from "../../src/report/types.ts";
 import type { Contrast } from "../../src/stats/types.ts";
 import { allocationFailed, allocationPassed, duplicatesCaution, otherChecks } from "./checks.ts";
+import { handChoices } from "./choices.ts";
 import { handContrast, shareArm } from "./contrasts.ts";
 import { booked, calendar, contacts, fare, farePlan, list, perSearch, planText } from "./plans.ts";
 import { type HandFlow, reductionOf } from "./reductions.ts";
@@ -26,22 +29,32 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
     variant,
     control: "list",
     contrast,
+    adjusted: null,
+    notAdjusted: null,
     pAdjusted: metric.role === "secondary" ? null : contrast.difference.p,
+    pHolm: null,
     zone,
     eitherWay: false,
+    power: NO_POWER,
+    normality: null,
+    resampled: null,
   };
 }
 
 function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly flow?: HandFlow }): ReportInputs {
+  const { plan, effects = [] } = over;
+  const reduction = reductionOf(plan, over.flow ?? flow);
+  const units = analysedUnits(reduction);
   return {
     planText,
     planSha256: "3f9a20c1".repeat(8),
     version: "0.1.0",
-    reduction: reductionOf(over.plan, over.flow ?? flow),
+    reduction,
     checks: [allocationPassed, ...otherChecks.slice(0, 2), duplicatesCaution, ...otherChecks.slice(2)],
-    effects: [],
+    choices: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
+    effects: withFamilies(plan, effects).map((effect) => withPower(effect, plan, units)),
   };
 }
 
@@ -55,9 +68,32 @@ const fareContrast = handContrast(
   { units: N, mean: 103.9, sd: 430, largest: 1450.5 },
 );
 
+const adoptChoices = [
+  handChoices(effectOf(booked, "calendar", bookedContrast, "worthwhile"), booked, [
+    ["any-follow-up", shareArm(N + 709, 0.1196), shareArm(N + 701, 0.1317)],
+    ["without-first-day", shareArm(46_200, 0.1203), shareArm(46_280, 0.1301)],
+    ["score", shareArm(N, 0.12), shareArm(N, 0.132)],
+  ]),
+  handChoices(effectOf(contacts, "calendar", contactsContrast, "within"), contacts, [
+    ["cap-0.99", { units: N, mean: 0.0771, sd: 0.27 }, { units: N, mean: 0.0766, sd: 0.27 }],
+    ["without-first-day", { units: 46_200, mean: 0.0807, sd: 0.33 }, { units: 46_280, mean: 0.08, sd: 0.33 }],
+  ]),
+  handChoices(
+    effectOf(fare, "calendar", fareContrast, "better"),
+    fare,
+    [
+      ["no-cap", { units: N, mean: 97.9, sd: 590 }, { units: N, mean: 104.6, sd: 610 }],
+      ["cap-0.99", { units: N, mean: 90.2, sd: 330 }, { units: N, mean: 98.8, sd: 341 }],
+      ["without-largest", { units: N - 1, mean: 96.37, sd: 409.8 }, { units: N - 1, mean: 103.87, sd: 429.7 }],
+    ],
+    0.00002,
+  ),
+];
+
 /** PAGES, page one: adopt. */
 export const adopt = inputs({
   plan: farePlan,
+  choices: adoptChoices,
   effects: [
     effectOf(booked, "calendar", bookedContrast, "worthwhile"),
     effectOf(contacts, "calendar", contactsContrast, "within"),

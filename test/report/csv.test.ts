@@ -21,12 +21,14 @@ describe("effects.csv", () => {
       expect(number(row.relative_low)).toBe(effect?.relative?.low ?? null);
       expect(number(row.control_mean)).toBe(effect?.arms.control.mean);
       expect(number(row.p)).toBe(effect?.difference.p);
+      expect(number(row.p_adjusted)).toBe(effect?.difference.pAdjusted);
+      expect(number(row.detectable)).toBe(effect?.power.detectable);
     });
   });
 
   it("leaves the cell empty where a figure does not exist", () => {
     const balance = read(effectsCsv(reportJson(several).effects)).filter((row) => row.metric?.startsWith("Change"));
-    expect(balance.map((row) => [row.relative, row.relative_low, row.p_adjusted])).toEqual([
+    expect(balance.map((row) => [row.relative, row.relative_low, row.units_for_worthwhile])).toEqual([
       [null, null, null],
       [null, null, null],
       [null, null, null],

@@ -19,6 +19,7 @@ const KEYS: Readonly<Record<string, string>> = { calendar: "__proto__", list: "c
 const KEPT_FIELDS = new Set(["id", "kind", "role", "summary", "goodIs", "withoutRows", "inTwoVariants", "incomplete"]);
 const KEPT_MORE = new Set([
   "adoptWhen",
+  "choice",
   "drop",
   "when",
   "zone",

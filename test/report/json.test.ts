@@ -1,5 +1,6 @@
 import { describe, expect, expectTypeOf, it } from "vitest";
 import type { z } from "zod";
+import { NO_POWER } from "../../src/decision/power.ts";
 import { twelveDigits } from "../../src/report/digits.ts";
 import { reportJson } from "../../src/report/json.ts";
 import { reportJsonSchema, reportSchema } from "../../src/report/schema.ts";
@@ -33,6 +34,15 @@ describe("report.json", () => {
     expect(json.effects[0]?.relative).toBeNull();
     expect(json.effects[0]?.difference).toMatchObject({ estimate: 0.012, low: null, high: null, z: null, p: null });
     expect(json.effects[0]?.power).toEqual({ detectable: null, unitsForWorthwhile: null });
+  });
+
+  it("holds what the test could find and the size that the worthwhile effect needs", () => {
+    // the formulas of METHODS 4 by hand, from the standard error and the control's mean that the JSON itself holds
+    const [booked] = reportJson(cases.adopt).effects;
+    const standardError = booked?.difference.standardError ?? Number.NaN;
+    const detectable = (1.959963984540054 + 0.8416212335729143) * standardError;
+    expect((booked?.power.detectable ?? 0) / detectable).toBeCloseTo(1, 10);
+    expect((booked?.power.unitsForWorthwhile ?? 0) / (100_301 * (detectable / (0.05 * 0.12)) ** 2)).toBeCloseTo(1, 10);
   });
 
   it("puts a check's figures beside its keys, and refuses one that would hide a key", () => {
@@ -106,6 +116,7 @@ function without(inputs: ReportInputs): ReportInputs {
     ...inputs,
     effects: inputs.effects.map((effect) => ({
       ...effect,
+      power: NO_POWER,
       contrast: {
         ...effect.contrast,
         difference: { ...effect.contrast.difference, standardError: null, low: null, high: null, z: null, p: null },

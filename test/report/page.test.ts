@@ -7,7 +7,7 @@ import { sectionOf, tagsOf, textOf, unescaped } from "./markup.ts";
 import { planText } from "./plans.ts";
 
 const TAGS = new Set(
-  `!doctype html head meta title style body a header div h1 h2 h3 p main section figure figcaption span table caption
+  `!doctype html head meta title style body a header div h1 h2 h3 h4 p main section figure figcaption span table caption
    thead tbody tfoot tr th td details summary dl dt dd nav ol ul li strong cite code pre br footer
    svg g path line text title desc`.split(/\s+/),
 );

@@ -116,6 +116,7 @@ function cellsOf(name: string, plan: Plan): MetricCells {
   return {
     metric: name,
     leftOut: zeros(plan),
+    notZero: zeros(plan),
     countedRows: 12_650,
     countedWithoutNumber: metric?.of.aggregate.kind === "sum" ? 2 : 0,
     cap: metric?.cap ? { value: "1450.5", units: plan.variants.map(() => 51) } : null,

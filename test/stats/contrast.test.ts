@@ -8,7 +8,7 @@ import { range } from "./levels.ts";
 
 /** n units of which the first `k` hold one value and the others another. */
 const units = (n: number, low = 1, high = 2, k = Math.floor(n / 2)) => range(1, n).map((i) => (i <= k ? low : high));
-const methodOf = (control: Arm, variant: Arm) => contrast(control, variant, 0.05).difference.method;
+const methodOf = (control: Arm, variant: Arm) => contrast(control, variant, normalCritical(0.05)).difference.method;
 
 describe("which method counts", () => {
   it("is Welch's for a mean with under 200 units in an arm, else the normal", () => {
@@ -33,7 +33,11 @@ describe("which method counts", () => {
 
 describe("the intervals beside", () => {
   it("are the normal one beside Welch's", () => {
-    const { difference, beside, critical, df } = contrast(meanArm(range(1, 10)), meanArm(range(7, 20)), 0.05);
+    const { difference, beside, critical, df } = contrast(
+      meanArm(range(1, 10)),
+      meanArm(range(7, 20)),
+      normalCritical(0.05),
+    );
     // R 4.2.2, t.test(7:20, 1:10): interval 4.947198 to 11.052802, df = 21.982; qt(0.975, 21.982) is 2.0739704.
     expectPrinted(difference.low, "4.947198");
     expectPrinted(difference.high, "11.052802");
@@ -47,14 +51,14 @@ describe("the intervals beside", () => {
   });
 
   it("are the score one beside a proportion's, and the plain one beside the score", () => {
-    const many = contrast(shareArm(48, 80), shareArm(56, 70), 0.05);
+    const many = contrast(shareArm(48, 80), shareArm(56, 70), normalCritical(0.05));
     expect(many).toMatchObject({ difference: { method: "normal" }, df: null, why: null });
     // Newcombe 1998, table II (a), method 10: 0.0524 to 0.3339.
     expect(many.beside.map(({ method }) => method)).toEqual(["score"]);
     expectPrinted(many.beside[0]?.low ?? null, "0.0524");
     expectPrinted(many.beside[0]?.high ?? null, "0.3339");
 
-    const few = contrast(shareArm(1, 34), shareArm(7, 34), 0.05);
+    const few = contrast(shareArm(1, 34), shareArm(7, 34), normalCritical(0.05));
     expect(few).toMatchObject({ difference: { method: "score", z: null }, df: null, why: null });
     expectPrinted(few.difference.low, "0.0189"); // Newcombe hybrid score, see shares.test.ts
     expect(few.beside.map(({ method }) => method)).toEqual(["normal"]);
@@ -63,7 +67,7 @@ describe("the intervals beside", () => {
   });
 
   it("of a proportion use the unbiased variance of its units", () => {
-    const { difference } = contrast(shareArm(48, 80), shareArm(56, 70), 0.05);
+    const { difference } = contrast(shareArm(48, 80), shareArm(56, 70), normalCritical(0.05));
     // By hand: 48 x 32 / (80^2 x 79) + 56 x 14 / (70^2 x 69).
     expectWithin(difference.standardError, Math.sqrt(1536 / (6400 * 79) + 784 / (4900 * 69)), 1e-14);
     expectWithin(difference.z, 0.2 / Math.sqrt(1536 / (6400 * 79) + 784 / (4900 * 69)), 1e-14);
@@ -78,7 +82,10 @@ describe("the ends at alpha, z and p of the one contrast", () => {
     ["few events", shareArm(4, 300), shareArm(9, 300)],
     ["ratio", ratioArm(units(250), units(250, 2, 5)), ratioArm(units(250, 1, 3), units(250, 2, 5))],
   ] as const)("widen with alpha for a %s", (_, control, variant) => {
-    const [one, three] = [contrast(control, variant, 0.05), contrast(control, variant, 0.05 / 3)];
+    const [one, three] = [
+      contrast(control, variant, normalCritical(0.05)),
+      contrast(control, variant, normalCritical(0.05 / 3)),
+    ];
     expect(three.critical).toBeGreaterThan(one.critical);
     expect(three.difference.low).toBeLessThan(one.difference.low ?? Number.NaN);
     expect(three.difference.high).toBeGreaterThan(one.difference.high ?? Number.NaN);
@@ -87,7 +94,7 @@ describe("the ends at alpha, z and p of the one contrast", () => {
   });
 
   it("take Welch's quantile at the normal's tail", () => {
-    const { critical, df } = contrast(meanArm([1, 2, 4]), meanArm([2, 4, 9]), 0.05 / 3);
+    const { critical, df } = contrast(meanArm([1, 2, 4]), meanArm([2, 4, 9]), normalCritical(0.05 / 3));
     // R 4.2.2: t.test(c(2, 4, 9), c(1, 2, 4))$parameter is 2.6955414012738848, qt(1 - 0.05 / 6, that) 5.3540425682756938.
     expectWithin(df, 2.6955414012738848, 1e-14);
     expectWithin(critical, 5.3540425682756938, 1e-12);
@@ -98,7 +105,7 @@ describe("a contrast that cannot be had", () => {
   const nothing = { standardError: null, low: null, high: null, z: null, p: null };
 
   it("has an estimate, and nothing else, for an arm of one unit", () => {
-    const found = contrast(meanArm([5]), meanArm([1, 2, 6]), 0.05);
+    const found = contrast(meanArm([5]), meanArm([1, 2, 6]), normalCritical(0.05));
     expect(found.difference).toEqual({ ...nothing, estimate: -2, method: "welch" });
     expect(found).toMatchObject({
       relative: { absent: "few-units" },
@@ -116,22 +123,26 @@ describe("a contrast that cannot be had", () => {
       [ratioArm([], []), ratioArm([1], [2])],
       [ratioArm([1], [0]), ratioArm([], [])],
     ] as const) {
-      const found = contrast(control, variant, 0.05);
+      const found = contrast(control, variant, normalCritical(0.05));
       expect(found.difference).toMatchObject({ ...nothing, estimate: null });
       expect(found).toMatchObject({ relative: { absent: "no-units" }, why: { absent: "no-units" }, beside: [] });
     }
-    expect(contrast(meanArm([]), meanArm([]), 0.05).control).toMatchObject({ units: 0, mean: null, total: 0 });
+    expect(contrast(meanArm([]), meanArm([]), normalCritical(0.05)).control).toMatchObject({
+      units: 0,
+      mean: null,
+      total: 0,
+    });
   });
 
   it("has an estimate, and nothing else, where all units of both arms are alike", () => {
-    const found = contrast(meanArm([1, 1, 1]), meanArm([1.5, 1.5]), 0.05);
+    const found = contrast(meanArm([1, 1, 1]), meanArm([1.5, 1.5]), normalCritical(0.05));
     expect(found.difference).toEqual({ ...nothing, estimate: 0.5, method: "welch" });
     expect(found).toMatchObject({ relative: { absent: "zero-variance" }, why: { absent: "zero-variance" } });
     expect(found.control).toMatchObject({ mean: 1, sd: null, skewness: null, kurtosis: null });
   });
 
   it("stands where one arm varies: the other counts with a variance of exactly 0", () => {
-    const { difference, control } = contrast(meanArm([0.1, 0.1, 0.1]), meanArm([1, 2, 3]), 0.05);
+    const { difference, control } = contrast(meanArm([0.1, 0.1, 0.1]), meanArm([1, 2, 3]), normalCritical(0.05));
     expectWithin(difference.standardError, Math.sqrt(1 / 3), 1e-15);
     expect(control.sd).toBeNull();
   });
@@ -142,14 +153,14 @@ describe("a contrast that cannot be had", () => {
       [1, 1.000000001, 1.000000002],
       [0, 1e17],
     ]) as [PowerSums, PowerSums];
-    const found = contrast({ kind: "mean", sums: small }, { kind: "mean", sums: large }, 0.05);
+    const found = contrast({ kind: "mean", sums: small }, { kind: "mean", sums: large }, normalCritical(0.05));
     expect(found).toMatchObject({ why: { absent: "lost-digits" }, relative: { absent: "lost-digits" } });
     expect(found.difference.estimate).not.toBeNull();
     expect(found.difference.low).toBeNull();
   });
 
   it("has a score interval even for 0 of n against 0 of m", () => {
-    const { difference, relative, why, beside } = contrast(shareArm(0, 20), shareArm(0, 10), 0.05);
+    const { difference, relative, why, beside } = contrast(shareArm(0, 20), shareArm(0, 10), normalCritical(0.05));
     expect(difference).toMatchObject({ estimate: 0, z: null, p: 1, standardError: null, method: "score" });
     expectPrinted(difference.low, "-0.1611"); // Newcombe 1998, table II (e)
     expectPrinted(difference.high, "0.2775");
@@ -157,13 +168,13 @@ describe("a contrast that cannot be had", () => {
   });
 
   it("has no relative difference where the control is not clearly above 0, and says why", () => {
-    const found = contrast(meanArm([-1, 1, 2]), meanArm([5, 6, 9]), 0.05);
+    const found = contrast(meanArm([-1, 1, 2]), meanArm([5, 6, 9]), normalCritical(0.05));
     expect(found.relative).toEqual({ absent: "control-near-zero" });
     expect(found.why).toBeNull();
   });
 
   it("has no ratio where a denominator adds up to 0", () => {
-    const found = contrast(ratioArm([1, 2], [1, 1]), ratioArm([1, 2], [0, 0]), 0.05);
+    const found = contrast(ratioArm([1, 2], [1, 1]), ratioArm([1, 2], [0, 0]), normalCritical(0.05));
     expect(found).toMatchObject({ why: { absent: "zero-denominator" }, difference: { estimate: null } });
   });
 });
@@ -213,7 +224,7 @@ describe("every contrast", () => {
   it("holds numbers or null, never NaN or infinity", () => {
     fc.assert(
       fc.property(pair, alphas, ([control, variant], alpha) => {
-        expectFinite(contrast(control, variant, alpha));
+        expectFinite(contrast(control, variant, normalCritical(alpha)));
       }),
       { numRuns: 1000 },
     );
@@ -222,7 +233,7 @@ describe("every contrast", () => {
   it("agrees with itself about 0: difference, relative and p", () => {
     fc.assert(
       fc.property(pair, alphas, ([control, variant], alpha) => {
-        const { difference, relative } = contrast(control, variant, alpha);
+        const { difference, relative } = contrast(control, variant, normalCritical(alpha));
         if (difference.low === null || difference.high === null) {
           expect(difference.p).toBeNull();
           return;
@@ -242,7 +253,10 @@ describe("every contrast", () => {
   it("is mirrored when the arms change places", () => {
     fc.assert(
       fc.property(pair, alphas, ([control, variant], alpha) => {
-        const [there, back] = [contrast(control, variant, alpha), contrast(variant, control, alpha)];
+        const [there, back] = [
+          contrast(control, variant, normalCritical(alpha)),
+          contrast(variant, control, normalCritical(alpha)),
+        ];
         const turned = (x: number | null) => (x === null ? null : 0 - x);
         const { estimate, low, high, z } = there.difference;
         expect(back.difference).toEqual({
@@ -271,9 +285,17 @@ describe("every contrast", () => {
         fc.integer({ min: -1e6, max: 1e6 }),
         fc.constantFrom(0.5, 4, 1000),
         (a, b, shift, stretch) => {
-          const plain = contrast(meanArm(a), meanArm(b), 0.05);
-          const shifted = contrast(meanArm(a.map((x) => x + shift)), meanArm(b.map((x) => x + shift)), 0.05);
-          const stretched = contrast(meanArm(a.map((x) => x * stretch)), meanArm(b.map((x) => x * stretch)), 0.05);
+          const plain = contrast(meanArm(a), meanArm(b), normalCritical(0.05));
+          const shifted = contrast(
+            meanArm(a.map((x) => x + shift)),
+            meanArm(b.map((x) => x + shift)),
+            normalCritical(0.05),
+          );
+          const stretched = contrast(
+            meanArm(a.map((x) => x * stretch)),
+            meanArm(b.map((x) => x * stretch)),
+            normalCritical(0.05),
+          );
           const near = (found: number | null, expected: number | null, size: number) =>
             expect(Math.abs((found ?? Number.NaN) - (expected ?? Number.NaN))).toBeLessThan(1e-12 * size);
           const size = Math.abs(plain.difference.low ?? 0) + Math.abs(plain.difference.high ?? 0);

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { difference } from "../../src/stats/difference.ts";
-import { bonferroniCritical, bonferroniP } from "../../src/stats/index.ts";
+import { bonferroniCritical, bonferroniP, normalCritical } from "../../src/stats/index.ts";
 import { tCritical } from "../../src/stats/student-t.ts";
 import type { Level } from "../../src/stats/types.ts";
 import { welch } from "../../src/stats/welch.ts";
@@ -11,11 +11,11 @@ import { fromR } from "./reference.ts";
 describe("the difference of two means", () => {
   // R 4.2.2, example(t.test): t.test(1:10, y = c(7:20)) prints t = -5.4349. Ours is variant minus control: the sign turns.
   it("has the statistic of R's documented example", () => {
-    expectPrinted(present(difference(levelOf(range(1, 10)), levelOf(range(7, 20)), 0.05)).z, "5.4349");
+    expectPrinted(present(difference(levelOf(range(1, 10)), levelOf(range(7, 20)), normalCritical(0.05))).z, "5.4349");
   });
 
   it("has the normal quantile times the standard error as its half-width", () => {
-    const found = present(difference(levelOf(range(1, 10)), levelOf(range(7, 20)), 0.05));
+    const found = present(difference(levelOf(range(1, 10)), levelOf(range(7, 20)), normalCritical(0.05)));
     // R 4.2.2: t.test(...)$stderr is 1.47196014438797; qnorm(0.975) is 1.959963984540054.
     expectWithin(found.standardError, 1.47196014438797, 1e-14);
     expectWithin(found.high - found.estimate, 1.47196014438797 * 1.959963984540054, 1e-14);
@@ -23,7 +23,9 @@ describe("the difference of two means", () => {
   });
 
   it("is exact where the means are large beside it", () => {
-    expect(present(difference(levelOf([1e7, 1e7 + 0.2]), levelOf([1e7 + 0.1, 1e7 + 0.3]), 0.05)).estimate).toBe(0.1);
+    expect(
+      present(difference(levelOf([1e7, 1e7 + 0.2]), levelOf([1e7 + 0.1, 1e7 + 0.3]), normalCritical(0.05))).estimate,
+    ).toBe(0.1);
   });
 
   it("turns its sign, and nothing else, when the arms change places", () => {

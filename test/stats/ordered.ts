@@ -1,11 +1,17 @@
-import { answered, type QuantileContrast, quantileContrast, type RankValues } from "../../src/stats/index.ts";
+import {
+  answered,
+  normalCritical,
+  type QuantileContrast,
+  quantileContrast,
+  type RankValues,
+} from "../../src/stats/index.ts";
 
 /** The quantile's contrast of values at hand, and how it asked for them. */
 export function compared(control: readonly number[], variant: readonly number[], q: string, alpha: number) {
   const [c, t] = [sorted(control), sorted(variant)];
   const rounds: number[] = [];
   const contrast: QuantileContrast = answered(
-    quantileContrast({ control: c.length, variant: t.length }, q, alpha),
+    quantileContrast({ control: c.length, variant: t.length }, q, normalCritical(alpha)),
     (asked): RankValues => {
       rounds.push(asked.control.length + asked.variant.length);
       return { control: asked.control.map((rank) => at(c, rank)), variant: asked.variant.map((rank) => at(t, rank)) };

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { answeredLater, quantileContrast } from "../../src/stats/index.ts";
+import { answeredLater, normalCritical, quantileContrast } from "../../src/stats/index.ts";
 import { expectPrinted, expectWithin } from "./expect.ts";
 import { compared } from "./ordered.ts";
 
@@ -133,7 +133,7 @@ describe("a contrast of quantiles that lacks something", () => {
 
 describe("the search for the values", () => {
   const units = { control: 2_000_000_000, variant: 1_000_000_000 };
-  const ask = (q: string) => quantileContrast(units, q, 0.05);
+  const ask = (q: string) => quantileContrast(units, q, normalCritical(0.05));
 
   it("asks few rounds and never twice, even of billions of units", async () => {
     const seen = new Set<string>();

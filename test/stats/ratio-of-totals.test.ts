@@ -1,7 +1,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import type { Arm } from "../../src/cells/types.ts";
-import { armFigures, contrast } from "../../src/stats/index.ts";
+import { armFigures, contrast, normalCritical } from "../../src/stats/index.ts";
 import { ratioOfTotals } from "../../src/stats/ratio-of-totals.ts";
 import { ratioArm } from "./arms.ts";
 import { expectPrinted, expectWithin, present } from "./expect.ts";
@@ -68,7 +68,7 @@ describe("a ratio of totals", () => {
           const { variance } = present(ratioOfTotals(arm));
           if (variance !== 0) expect(variance).toEqual({ absent: "lost-digits" });
           expect(armFigures(arm).sd).toBeNull();
-          expect(contrast(arm, arm, 0.05).difference).toMatchObject({
+          expect(contrast(arm, arm, normalCritical(0.05)).difference).toMatchObject({
             estimate: 0,
             standardError: null,
             low: null,

@@ -136,3 +136,37 @@ export const covariates = () =>
       balance: { difference: string; t: string; p: string; standardised: string };
     }[]
   >("covariate.json");
+
+interface AdjustedShape {
+  readonly mean: string;
+  readonly sd: string;
+  readonly skewness: string;
+  readonly kurtosis: string;
+}
+
+/** R 4.2.2: adjusted contrasts on R's own data by cov, var and t.test, slopes of lm where those are the same. */
+export const adjustedContrasts = () =>
+  read<
+    {
+      name: string;
+      y: number[];
+      x: (number | null)[];
+      variant: number[];
+      method: "normal" | "welch";
+      theta: string;
+      meanOfX: string;
+      varianceReduction: string;
+      estimate: string;
+      standardError: string;
+      low: string;
+      high: string;
+      p: string;
+      relative: string;
+      relativeLow: string;
+      relativeHigh: string;
+      slope: string | null;
+      effect: string | null;
+      control: AdjustedShape;
+      treated: AdjustedShape;
+    }[]
+  >("adjusted-contrast.json");

@@ -3,7 +3,7 @@ import type { BucketCells } from "../../src/cells/types.ts";
 import { type BootstrapT, bootstrapRelative, bootstrapT } from "../../src/stats/bootstrap-t.ts";
 import { gapOfX, tableOfArms } from "../../src/stats/bucket-cells.ts";
 import { drawRows, studentised, sumRows } from "../../src/stats/draws.ts";
-import { generator, type Seed } from "../../src/stats/generator.ts";
+import { generator, type Seed, wordsOf } from "../../src/stats/generator.ts";
 import { dealtToVariant, randomisation } from "../../src/stats/randomisation.ts";
 import { relative } from "../../src/stats/relative.ts";
 import { isNotDrawn, type NotDrawn } from "../../src/stats/resampling.ts";
@@ -59,10 +59,10 @@ describe("T of a draw", () => {
     const sums = new Float64Array(table.width);
     sumRows(table, Uint32Array.from(held.keys()), sums);
     const t = studentised(kind, sums.slice(), gapOfX(cells));
-    const next = generator(SEED);
+    const fill = wordsOf(SEED);
     for (let draw = 0; draw < 50; draw++) {
       const picks = new Uint32Array(held.length);
-      drawRows(picks, held.length, next);
+      drawRows(picks, held.length, fill);
       sumRows(table, picks, sums);
       const drawn = Array.from(picks).flatMap((row) => units.filter(([bucket]) => bucket === held[row]));
       const found = comparedUnits(kind, drawn);

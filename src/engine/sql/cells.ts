@@ -66,45 +66,72 @@ export interface Over {
 }
 export const EACH_BUCKET: Over = { bucket: sql`bucket`, units: sql`analysed` };
 export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
-/** Arms apart by what other choices ask: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day. */
-export const EACH_STANDING: Over = {
-  bucket: sql`CASE WHEN analysed THEN 1 ELSE 0 END + CASE WHEN other_way THEN 2 ELSE 0 END
-    + CASE WHEN any_follow_up THEN 4 ELSE 0 END + CASE WHEN first_day THEN 8 ELSE 0 END`,
-  units: sql`TRUE`,
-};
+/** Arm by arm, the units whose value is not 0. */
+export const unlessZero = (x: Statement): Over => ({ bucket: sql`0`, units: sql`(analysed AND ${x} <> 0)` });
 
-const PAIRS = ["10", "01", "20", "11", "02"] as const;
+/** How a candidate stands to the choices of units: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day. */
+const STANDING = sql`CASE WHEN analysed THEN 1 ELSE 0 END + CASE WHEN other_way THEN 2 ELSE 0 END
+    + CASE WHEN any_follow_up THEN 4 ELSE 0 END + CASE WHEN first_day THEN 8 ELSE 0 END`;
+
+/** Apart by standing, those that not every choice of units counts. */
+export const OTHERWISE: Over = {
+  bucket: STANDING,
+  units: sql`(NOT analysed OR NOT other_way OR NOT any_follow_up OR first_day)`,
+};
+export const NOT_ANALYSED = sql`(SELECT * FROM candidates WHERE NOT analysed)`;
+
+/** Gives variant, standing, units. */
+export const standingCounts = (): Statement => sql`
+  SELECT variant, ${STANDING} AS standing, count(*) AS units FROM candidates GROUP BY 1, 2`;
+
+/** Units above the first of some caps in ascending order, apart by how many of the caps they lie above. */
+export function aboveCaps(x: Statement, caps: readonly string[], dialect: Dialect): Over {
+  const above = (cap: string) => sql`${x} > CAST(${cap} AS ${dialect.sumType})`;
+  const [lowest] = caps;
+  if (lowest === undefined) throw new Error("no cap to lie above");
+  const cases = caps.map((cap, i) => sql`WHEN ${above(cap)} THEN ${i + 1}`).reverse();
+  return { bucket: sql`CASE ${join(cases, "\n")} END`, units: sql`(analysed AND ${above(lowest)})` };
+}
+
+/** The value that so many others exceed or equal, if it is no smaller than a bound. */
+export const valueFromTop = (x: Statement, bound: string, above: bigint, dialect: Dialect): Statement =>
+  sql`SELECT ${x} AS x FROM units WHERE ${x} >= CAST(${bound} AS ${dialect.sumType})
+    ORDER BY x DESC LIMIT 1 OFFSET ${above}`;
+
+/** Two values over the same units; a unit without y has no x. Partial: some units have y alone. */
+export interface Pair {
+  readonly y: Measured;
+  readonly x: Measured;
+  readonly isPartial: boolean;
+}
 
 /**
- * Joint sums of pairs of values, over the units that have both.
- * Gives   variant, bucket, and per pair i: n<i>, h<i>_jk, l<i>_jk, y<i> and x<i> (exact sums)
+ * What the cells of two values lack for their joint sums: the sum of products, and of a partial pair the sums of y over
+ * the units that have x.
+ * Gives   variant, bucket, and per pair i: n<i>, h<i>_11, l<i>_11; of a partial one h<i>_10, l<i>_10, h<i>_20, l<i>_20, y<i>
  */
-export function jointCells(pairs: readonly (readonly [Measured, Measured])[], over: Over = EACH_BUCKET): Statement {
-  const us = pairs.flatMap(([y, x], i) => [
-    sql`${y.u} AS ${name(`u${i}`)}, ${x.u} AS ${name(`w${i}`)}`,
-    sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.x} END AS ${name(`y${i}`)}`,
-    sql`CASE WHEN ${y.x} IS NOT NULL THEN ${x.x} END AS ${name(`x${i}`)}`,
+export function jointCells(pairs: readonly Pair[], over: Over = EACH_BUCKET): Statement {
+  const us = pairs.flatMap(({ y, x, isPartial }, i) => [
+    sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.u} END AS ${name(`u${i}`)}, ${x.u} AS ${name(`w${i}`)}`,
+    ...(isPartial ? [sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.x} END AS ${name(`y${i}`)}`] : []),
   ]);
-  const terms = pairs.flatMap((_, i) => {
+  const terms = pairs.flatMap(({ isPartial }, i) => {
     const [u, w] = [name(`u${i}`), name(`w${i}`)];
-    // A sum of one value counts only where the other is there too: times 1 or NULL.
-    const products = [
-      sql`${u} * (${w} * 0 + 1)`,
-      sql`${w} * (${u} * 0 + 1)`,
-      sql`${u} * ${u} * (${w} * 0 + 1)`,
-      sql`${u} * ${w}`,
-      sql`${w} * ${w} * (${u} * 0 + 1)`,
-    ];
     return [
-      name(`y${i}`),
-      name(`x${i}`),
-      ...PAIRS.map((jk, at) => sql`(${products[at] ?? u}) * ${TWO_60} AS ${name(`t${i}_${jk}`)}`),
+      sql`${u} * ${w} * ${TWO_60} AS ${name(`t${i}_11`)}`,
+      ...(isPartial
+        ? [
+            name(`y${i}`),
+            sql`${u} * ${TWO_60} AS ${name(`t${i}_10`)}`,
+            sql`${u} * ${u} * ${TWO_60} AS ${name(`t${i}_20`)}`,
+          ]
+        : []),
     ];
   });
-  const sums = pairs.flatMap((_, i) => [
-    sql`count(${name(`y${i}`)}) AS ${name(`n${i}`)}`,
-    ...PAIRS.flatMap((jk) => twoIntegers(name(`t${i}_${jk}`), `${i}_${jk}`)),
-    sql`sum(${name(`y${i}`)}) AS ${name(`y${i}`)}, sum(${name(`x${i}`)}) AS ${name(`x${i}`)}`,
+  const sums = pairs.flatMap(({ isPartial }, i) => [
+    sql`count(${name(`t${i}_11`)}) AS ${name(`n${i}`)}`,
+    ...["11", ...(isPartial ? ["10", "20"] : [])].flatMap((jk) => twoIntegers(name(`t${i}_${jk}`), `${i}_${jk}`)),
+    ...(isPartial ? [sql`sum(${name(`y${i}`)}) AS ${name(`y${i}`)}`] : []),
   ]);
   return sql`
     SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
@@ -124,17 +151,30 @@ function twoIntegers(t: Statement, suffix: string): Statement[] {
   ];
 }
 
-/** Per variant the pair of the unit with the smallest and of that with the largest value; ties by x. */
-export function pairsAtEnds(pairs: readonly (readonly [Statement, Statement | null])[]): Statement {
-  const ends = pairs.flatMap(([y, x], i) => {
-    const pair = sql`{'y': ${y}, 'x': ${x ?? sql`CAST(NULL AS DECIMAL(38, 9))`}}`;
-    const has = sql`FILTER (WHERE ${y} IS NOT NULL)`;
-    return [
-      sql`(min(${pair}) ${has}).y AS ${name(`ly${i}`)}, (min(${pair}) ${has}).x AS ${name(`lx${i}`)}`,
-      sql`(max(${pair}) ${has}).y AS ${name(`my${i}`)}, (max(${pair}) ${has}).x AS ${name(`mx${i}`)}`,
-    ];
+/** The unit of an arm at which a key has some value, and the pair that is asked of it. */
+export interface EndOfArm {
+  readonly variant: number;
+  /** Index into the keys. */
+  readonly key: number;
+  readonly at: Statement;
+  readonly y: Statement;
+  readonly x: Statement;
+}
+
+/** The pair (y, x) of the unit at each end, of several the smallest pair. Gives y<i>, x<i>. */
+export function pairsAtEnds(keys: readonly Statement[], ends: readonly EndOfArm[]): Statement {
+  const computed = keys.map((key, k) => sql`${key} AS ${name(`key${k}`)}`);
+  const pairs = ends.map(
+    ({ variant, key, at, y, x }, i) => sql`
+      min({'y': ${y}, 'x': ${x}}) FILTER (WHERE variant = ${variant} AND ${name(`key${key}`)} = ${at}) AS ${name(`pair${i}`)}`,
+  );
+  const parts = ends.map((_, i) => {
+    const pair = name(`pair${i}`);
+    return sql`${pair}.y AS ${name(`y${i}`)}, ${pair}.x AS ${name(`x${i}`)}`;
   });
-  return sql`SELECT ${list([sql`variant`, ...ends])} FROM units GROUP BY variant`;
+  return sql`
+    SELECT ${list(parts)}
+    FROM (SELECT ${list(pairs)} FROM (SELECT *, ${list(computed)} FROM units))`;
 }
 
 /** Powers by repeated multiplication, left to right: ((u u) u) u. */
@@ -179,16 +219,16 @@ export function atRank(x: Statement, rank: bigint, n: bigint): Statement {
     : sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
 }
 
-/** The value at a rank of one arm. */
-export const atRankOfArm = (x: Statement, variant: number, rank: bigint): Statement =>
-  sql`SELECT ${x} AS x FROM units WHERE variant = ${variant} AND ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
-
-/** Units per variant, those without a value, and those above a cap. Gives variant, units, none<p>, over<p>. */
+/**
+ * Units per variant, those without a value, those whose value is not 0, and those above a cap.
+ * Gives variant, units, none<p>, some<p>, over<p>.
+ */
 export function leftOut(values: readonly Statement[], caps: readonly (string | null)[], dialect: Dialect): Statement {
   const counts = values.flatMap((x, p) => {
     const cap = caps[p] ?? null;
     return [
       sql`count(*) - count(${x}) AS ${name(`none${p}`)}`,
+      sql`count(*) FILTER (WHERE ${capped(x, cap, dialect)} <> 0) AS ${name(`some${p}`)}`,
       cap === null
         ? sql`0 AS ${name(`over${p}`)}`
         : sql`count(*) FILTER (WHERE ${x} > CAST(${cap} AS ${dialect.sumType})) AS ${name(`over${p}`)}`,

@@ -7,6 +7,8 @@ export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
 export { atEnrolment, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
+/** Order statistics. */
+export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
 export { brokenQuotes, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";

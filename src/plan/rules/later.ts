@@ -14,18 +14,7 @@ export interface Later {
 }
 
 /** One line a feature; it goes when the feature comes. */
-export const LATER: readonly Later[] = [
-  {
-    of: "metric",
-    path: ["summary"],
-    value: "quantile",
-    remedy: "Take mean, proportion or ratio-of-totals, or remove the metric.",
-  },
-  { of: "metric", path: ["adjust-for"], remedy: "Remove it." },
-  { of: "plan", path: ["decision", "primaries"], value: "any", remedy: "Write all, or remove the key." },
-  { of: "plan", path: ["decision", "interval"], value: "skew-corrected", remedy: "Write normal, or remove the key." },
-  { of: "plan", path: ["forecast"], remedy: "Remove it." },
-];
+export const LATER: readonly Later[] = [];
 
 /** Apart from the list, for `Plan` has no field for them: without this they would go unseen. */
 const SUBGROUPS: Later = { of: "plan", path: ["subgroups"], remedy: "Remove it." };

@@ -19,7 +19,7 @@ export interface ForestAxis {
   readonly ticks: readonly number[];
 }
 
-type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
+export type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
 
 const WIDTH = 300;
 /** Far taller than a row: the row's cell cuts it, so that the zero line runs through whatever the row's height. */
@@ -63,10 +63,13 @@ function roundStep(size: number): number {
   return factor * power;
 }
 
-/** One row's drawing: zero line, tick, interval as a thin line, estimate as a square. `row` null: the zero line alone. */
-export function forestStrip(row: ForestRow | null, axis: ForestAxis): TopLevelSpec {
+/**
+ * One row's drawing: zero line, tick, interval as a thin line, estimate as a square; `row` null: the zero line alone.
+ * @param behind what else runs through every row, drawn under its marks
+ */
+export function forestStrip(row: ForestRow | null, axis: ForestAxis, behind: readonly Layer[] = []): TopLevelSpec {
   const zero: Layer = { mark: { type: "rule", color: theme.line, strokeWidth: 1 }, encoding: { x: at(0, axis) } };
-  return { ...frame(HEIGHT), layer: [zero, ...(row === null ? [] : rowMarks(row, axis))] };
+  return { ...frame(HEIGHT), layer: [zero, ...behind, ...(row === null ? [] : rowMarks(row, axis))] };
 }
 
 function rowMarks({ relative, mark, style }: ForestRow, axis: ForestAxis): Layer[] {
@@ -104,7 +107,8 @@ function rowMarks({ relative, mark, style }: ForestRow, axis: ForestAxis): Layer
   return marks;
 }
 
-function at(datum: number, axis: ForestAxis) {
+/** A place on the axis that all rows share. */
+export function at(datum: number, axis: ForestAxis) {
   return { datum, type: "quantitative", axis: null, title: null, scale: scaleOf(axis) } as const;
 }
 function scaleOf(axis: ForestAxis) {

@@ -4,6 +4,7 @@
  */
 export const theme = {
   ink: "currentColor",
+  paper: "var(--paper)",
   quiet: "var(--quiet)",
   line: "var(--line)",
   font: "inherit",

@@ -1,3 +1,4 @@
+import type { Check } from "../../checks/types.ts";
 import {
   askedSentence,
   type Conclusion,
@@ -5,6 +6,7 @@ import {
   effectSentence,
   guardrailSentence,
   nextSentences,
+  otherIntervalSentence,
 } from "../../decision/index.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, plural } from "../../words/index.ts";
@@ -93,13 +95,29 @@ function ended(text: string): string {
 }
 
 /** The tally, and the caution that matters most; what stops a decision is told above it already. */
-function trustText({ checks, conclusion }: ReportInputs): string {
+function trustText(inputs: ReportInputs): string {
+  const { checks, conclusion } = inputs;
   const tally = tallyText(checks);
   const open = checks.filter((check) => check.result !== "pass");
   const told = conclusion.decision === "undecidable" ? open.filter((check) => check.result !== "fail") : open;
   const worst = mostImportant(told);
   if (worst === null) return `${tally}.`;
-  return told.length === 1 ? `${tally}: ${worst.sentence}` : `${tally}; what matters most: ${worst.sentence}`;
+  const sentence = [worst, ...farFromNormal(told, worst)].map((check) => check.sentence + afterwards(check, inputs));
+  return told.length === 1 ? `${tally}: ${sentence.join(" ")}` : `${tally}; what matters most: ${sentence.join(" ")}`;
+}
+
+/** Tails that are far off are told in any case. */
+function farFromNormal(checks: readonly Check[], told: Check): Check[] {
+  return checks.filter((check) => check.id === "normality" && check.strong && check !== told);
+}
+
+/** Of tails that are far off, what the other interval says; nothing where no estimate may stand on the page. */
+function afterwards(check: Check, { plan, effects, conclusion }: ReportInputs): string {
+  if (check.id !== "normality" || !check.strong || conclusion.decision === "undecidable") return "";
+  const part = check.parts.find(({ sentence }) => sentence === check.sentence);
+  const effect = effects.find(({ metric, variant }) => metric === part?.about && variant === part?.figures.variant);
+  const sentence = effect === undefined ? null : otherIntervalSentence(effect, plan, effects);
+  return sentence === null ? "" : ` ${sentence}`;
 }
 
 function countedText({ plan, reduction }: ReportInputs): string {

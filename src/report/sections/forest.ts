@@ -1,4 +1,12 @@
-import { absolute, type Effect, metricOf, ruleOf, signedRule } from "../../decision/index.ts";
+import {
+  absolute,
+  covariateInWords,
+  deciding,
+  type Effect,
+  metricOf,
+  ruleOf,
+  signedRule,
+} from "../../decision/index.ts";
 import type { Amount, Plan, Role } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
 import { capital, plain, planPercent, signedPercent } from "../../words/index.ts";
@@ -128,20 +136,28 @@ function readingText(plan: Plan, effects: readonly Effect[], beyond: boolean): s
     ...(variants > 1
       ? [`Intervals of what decides or must not get worse hold for all ${variants} variants together.`]
       : []),
+    ...adjustedTexts(plan, effects),
     ...(beyond ? ["A line that reaches the edge goes on beyond it; the figures are whole."] : []),
   ].join(" ");
 }
 
+/** "Fare per visitor: levels and difference are adjusted for the same in the 14 days before enrolment." */
+function adjustedTexts({ metrics }: Plan, effects: readonly Effect[]): string[] {
+  return metrics
+    .filter(({ name }) => effects.some((effect) => effect.metric === name && effect.adjusted !== null))
+    .map((metric) => `${metric.name}: levels and difference are adjusted for ${covariateInWords(metric)}.`);
+}
+
 const NUMBERS: readonly (readonly [head: string, pick: (effect: Effect) => number | null])[] = [
-  ["control", ({ contrast }) => contrast.control.mean],
-  ["variant", ({ contrast }) => contrast.variant.mean],
-  ["difference", ({ contrast }) => contrast.difference.estimate],
-  ["low", ({ contrast }) => contrast.difference.low],
-  ["high", ({ contrast }) => contrast.difference.high],
-  ["relative", ({ contrast }) => relativeOf(contrast)?.estimate ?? null],
-  ["low", ({ contrast }) => relativeOf(contrast)?.low ?? null],
-  ["high", ({ contrast }) => relativeOf(contrast)?.high ?? null],
-  ["p", ({ contrast }) => contrast.difference.p],
+  ["control", (effect) => deciding(effect).control.mean],
+  ["variant", (effect) => deciding(effect).variant.mean],
+  ["difference", (effect) => deciding(effect).difference.estimate],
+  ["low", (effect) => deciding(effect).difference.low],
+  ["high", (effect) => deciding(effect).difference.high],
+  ["relative", (effect) => relativeOf(deciding(effect))?.estimate ?? null],
+  ["low", (effect) => relativeOf(deciding(effect))?.low ?? null],
+  ["high", (effect) => relativeOf(deciding(effect))?.high ?? null],
+  ["p", (effect) => deciding(effect).difference.p],
 ];
 
 function relativeOf({ relative }: Effect["contrast"]): Relative | null {
@@ -157,7 +173,7 @@ function sixDigits(figure: number | null): string {
  * interval held against it is drawn, over the control's level, so that line and tick agree with the verdict.
  */
 function forestRow(effect: Effect, plan: Plan): ForestRow | null {
-  const { relative, control } = effect.contrast;
+  const { relative, control } = deciding(effect);
   if ("absent" in relative || control.mean === null) return null;
   const metric = metricOf(effect, plan);
   const rule = ruleOf(metric);

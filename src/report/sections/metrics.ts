@@ -1,8 +1,8 @@
-import { because, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
+import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, plain, plural, pText } from "../../words/index.ts";
+import { capital, count, type Interval, percentile, plain, plural, pText } from "../../words/index.ts";
 import {
   bareText,
   effectText,
@@ -14,6 +14,7 @@ import {
   verdictText,
 } from "../effect-text.ts";
 import { measureText } from "../plan-words.ts";
+import { adjustedNotes, unadjusted } from "./adjusted.ts";
 
 /** Section 5: one part a metric, with its arms and its effects. */
 export interface MetricSection {
@@ -28,7 +29,8 @@ export interface MetricSection {
   readonly armColumns: readonly string[];
   readonly arms: readonly ArmText[];
   readonly effects: readonly EffectRow[];
-  readonly adjusted: boolean;
+  /** For what p is adjusted, as the head of its column; null where it is not. */
+  readonly adjustedFor: string | null;
 }
 export interface ArmText {
   readonly variant: string;
@@ -40,6 +42,8 @@ export interface EffectRow {
   readonly relative: Signed;
   readonly p: string;
   readonly pAdjusted: string;
+  /** "Holm 0.0012"; "" where nothing stands beside. */
+  readonly pBeside: string;
   readonly method: string;
   readonly verdict: string;
   readonly beside: readonly string[];
@@ -49,6 +53,7 @@ export const METHOD: Readonly<Record<Method, string>> = {
   normal: "normal",
   welch: "Welch\u2019s t",
   score: "score",
+  "skew-corrected": "skew-corrected",
   quantile: "order statistics",
 };
 
@@ -65,10 +70,22 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       unit: metric.summary === "proportion" ? "percentage points" : (metric.unitOfMeasure ?? ""),
       armColumns: armColumns(metric, plan),
       arms: armRows(metric, plan, own),
-      effects: own.map((effect) => effectRow(effect, metric, plan)),
-      adjusted: metric.role !== "secondary" && own.length > 1,
+      effects: own.flatMap((effect) => effectRows(effect, metric, plan)),
+      adjustedFor: adjustedFor(metric, plan),
     };
   });
+}
+
+/** The family that a metric's p are adjusted for, where it holds more than one test. */
+function adjustedFor(metric: Metric, plan: Plan): string | null {
+  const variants = plan.variants.length - 1;
+  if (metric.role === "secondary") {
+    const tests = variants * plan.metrics.filter(({ role }) => role === "secondary").length;
+    return tests > 1 ? `${tests} tests for information` : null;
+  }
+  const overPrimaries = metric.role === "primary" && anyIsEnough(plan);
+  if (variants > 1) return overPrimaries ? "the variants and deciding measures" : `${variants} variants`;
+  return overPrimaries ? "the deciding measures" : null;
 }
 
 function ruleText(metric: Metric): string {
@@ -103,6 +120,7 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
       `${plural(cells.countedWithoutNumber, "counted row", "counted rows")} held no number and added nothing.`,
     );
   }
+  notes.push(...adjustedNotes(metric, plan, effects));
   for (const effect of effects) {
     const absent = absentText(effect, plan);
     if (absent !== null && !notes.includes(absent)) notes.push(absent);
@@ -111,9 +129,15 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
 }
 
 /** Why a figure does not exist, as a sentence. */
-function absentText({ contrast, control }: Effect, plan: Plan): string | null {
+function absentText(effect: Effect, plan: Plan): string | null {
+  const contrast = deciding(effect);
+  const { control } = effect;
   const { one, many } = plan.unitCalled;
+  const { low, high } = contrast.difference;
   if (contrast.why !== null) return `There is no interval, since ${because(contrast.why.absent, one, many)}.`;
+  if (contrast.difference.method === "quantile" && (low === null || high === null)) {
+    return `One end of the interval is open, since ${because("few-for-rank", one, many)}.`;
+  }
   if (!("absent" in contrast.relative)) return null;
   return `The difference relative to "${control}" is not shown, since ${because(contrast.relative.absent, one, many)}.`;
 }
@@ -123,6 +147,9 @@ function armColumns(metric: Metric, plan: Plan): string[] {
   const many = capital(plan.unitCalled.many);
   if (metric.summary === "proportion") return [many, "With", "Share"];
   if (metric.summary === "ratio-of-totals") return [many, `Total${unit}`, "Ratio", "Standard deviation of the score"];
+  if (metric.quantile !== null) {
+    return [many, `${capital(percentile(metric.quantile))}${unit}`, `Smallest${unit}`, `Largest${unit}`];
+  }
   return [many, `Total${unit}`, `Mean${unit}`, `Standard deviation${unit}`, `Smallest${unit}`, `Largest${unit}`];
 }
 
@@ -147,15 +174,28 @@ function armRows(metric: Metric, plan: Plan, effects: readonly Effect[]): ArmTex
   }
   const means = column((arm) => arm.mean);
   const sds = column((arm) => arm.sd);
-  const ends = metric.summary === "mean" ? [column((arm) => arm.smallest), column((arm) => arm.largest)] : [];
-  return arms.map(({ name }, i) => ({
-    variant: name,
-    cells: [units, totals, means, sds, ...ends].map((texts) => texts[i] ?? NONE),
-  }));
+  const ends = [column((arm) => arm.smallest), column((arm) => arm.largest)];
+  const columns = {
+    mean: [units, totals, means, sds, ...ends],
+    "ratio-of-totals": [units, totals, means, sds],
+    quantile: [units, means, ...ends],
+  }[metric.summary];
+  return arms.map(({ name }, i) => ({ variant: name, cells: columns.map((texts) => texts[i] ?? NONE) }));
+}
+
+/** One row an effect; where it is adjusted that one decides, and the unadjusted stands under it. */
+function effectRows(effect: Effect, metric: Metric, plan: Plan): EffectRow[] {
+  const own = effectRow(effect, metric, plan);
+  const plain = unadjusted(effect);
+  if (plain === null) return [own];
+  return [
+    { ...own, variant: `${own.variant}, adjusted` },
+    { ...effectRow(plain, metric, plan), variant: `${own.variant}, not adjusted`, verdict: "shown beside" },
+  ];
 }
 
 function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
-  const { difference, relative } = effect.contrast;
+  const { difference, relative } = deciding(effect);
   const text = effectText(effect, plan);
   return {
     variant: effect.variant,
@@ -163,6 +203,7 @@ function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
     relative: "absent" in relative ? { estimate: "not shown", interval: "" } : (text.relative ?? text.bare),
     p: pCell(difference.p),
     pAdjusted: pCell(effect.pAdjusted),
+    pBeside: effect.pHolm === null ? "" : `Holm ${pCell(effect.pHolm)}`,
     method: METHOD[difference.method],
     verdict: verdictText(effect, plan),
     beside: besideTexts(effect, metric),
@@ -174,7 +215,7 @@ function pCell(p: number | null): string {
 }
 
 function besideTexts(effect: Effect, metric: Metric): string[] {
-  const { beside, difference } = effect.contrast;
+  const { beside, difference } = deciding(effect);
   return beside.map(({ method, low, high }) => {
     const interval: Interval = { estimate: difference.estimate ?? (low + high) / 2, low, high };
     return `${METHOD[method]}, ${bareText(interval, metric, []).interval}`;

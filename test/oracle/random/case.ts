@@ -6,6 +6,7 @@ import type { Lists, RawFile } from "../types.ts";
 import { type Dice, diceOf } from "./dice.ts";
 import { drawLog, type RandomSource } from "./log.ts";
 import { drawPlan, type RandomList, reordered } from "./plan.ts";
+import { withQuantiles } from "./quantiles.ts";
 import { drawShape, type Shape } from "./shape.ts";
 import { type Form, writeList, writeLog } from "./write.ts";
 import { type Piece, planText } from "./yaml.ts";
@@ -21,8 +22,9 @@ export interface RandomCase {
 
 export function randomCase(seed: number): RandomCase {
   const dice = diceOf(seed);
-  const shape = drawShape(dice);
-  const drawn = drawPlan(dice, shape);
+  // Dice of their own, so that the other draws of a seed stay what they were.
+  const few = drawShape(dice);
+  const { plan: drawn, shape } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
   const logFirst = dice.chance(0.5);
   const columns = shape.sources.map(({ names }) => columnsPiece(dice, names));
   const plan = (patterns: readonly string[]) => {

@@ -2,6 +2,7 @@ import type { Clock } from "../time.ts";
 import type { Cell } from "../where.ts";
 import type { Dice } from "./dice.ts";
 import { isoText } from "./plan.ts";
+import { MANY_UNITS } from "./quantiles.ts";
 import type { Shape, SourceShape } from "./shape.ts";
 import { BAD_TIMES, NOT_NUMBERS, OUT_OF_RANGE } from "./values.ts";
 
@@ -20,7 +21,8 @@ export interface LogRules {
 }
 
 export function drawLog(dice: Dice, shape: Shape, rules: LogRules): RandomSource[] {
-  const wanted = dice.chance(0.3) ? dice.between(5, 30) : dice.between(30, 59);
+  const few = dice.chance(0.3) ? dice.between(5, 30) : dice.between(30, 59);
+  const wanted = shape.units.length > MANY_UNITS ? 7 * few : few;
   const sources = shape.sources.map((source) => ({ source, rows: [] as RandomRow[] }));
   const ids = Array.from({ length: dice.between(3, 20) }, (_, at) => (at === 0 ? "id, 0" : `id${at}`));
   for (let count = 0; count < wanted; count++) {

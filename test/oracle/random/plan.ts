@@ -120,10 +120,20 @@ function drawMetric(dice: Dice, shape: Shape, at: number): Piece {
     of: reordered(dice, of),
     ...(per === null ? {} : { per: reordered(dice, per) }),
     ...cap,
+    ...(summary === "ratio-of-totals" ? {} : drawCovariate(dice, shape)),
     ...drawRole(dice, at),
     ...drawWithoutRows(dice, summary, needsZero),
     ...dice.pick([{}, { "good-is": "lower" }, { "good-is": "higher" }]),
   });
+}
+
+function drawCovariate(dice: Dice, shape: Shape): { [key: string]: Piece } {
+  if (dice.chance(0.5)) return {};
+  const column = { column: dice.pick(NUMERIC_EXTRAS) };
+  // Instants lie a follow-up apart: days before of that length begin at one.
+  const whole = String(shape.followUpDays);
+  const days = { "days-before": digits(dice.pick(["0.5", "2", "30", whole, whole, whole])) };
+  return { "adjust-for": shape.hasTime ? dice.pick([column, days, days]) : column };
 }
 
 function drawRole(dice: Dice, at: number): { [key: string]: Piece } {

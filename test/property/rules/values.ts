@@ -1,6 +1,7 @@
 import type { Aggregate, Metric } from "../../../src/plan/types.ts";
 import { readDecimal } from "../../oracle/number.ts";
 import { partMatches } from "../../oracle/span.ts";
+import type { OracleMetric } from "../../oracle/types.ts";
 import { count, endedRows, parts, type Rules, type Seen } from "./seen.ts";
 
 /** Metrics that some unit has a value of other than 0. */
@@ -140,6 +141,46 @@ function binding(seen: Seen, kind: "at" | "quantile", summary: Metric["summary"]
   );
 }
 
+const quantiles: Rules = {
+  ...Object.fromEntries(
+    AGGREGATES.map((kind) => [
+      `quantile of ${kind}`,
+      (seen: Seen) => metricsOf(seen, ({ summary, of }) => summary === "quantile" && of.aggregate.kind === kind),
+    ]),
+  ),
+  "quantile with both ends in every arm": (seen) =>
+    countQuantiles(seen, (arms) => arms.every((arm) => arm !== null && arm.low !== null && arm.high !== null)),
+  "quantile with one open end": (seen) =>
+    countQuantiles(seen, (arms) => arms.some((arm) => arm !== null && (arm.low === null) !== (arm.high === null))),
+  "quantile of an arm without values": (seen) => countQuantiles(seen, (arms) => arms.some((arm) => arm === null)),
+  "quantile at an end, by ties": (seen) =>
+    countQuantiles(seen, (arms) => arms.some((arm) => arm !== null && (arm.low === arm.at) !== (arm.high === arm.at))),
+  "quantile without a width in an arm": (seen) =>
+    countQuantiles(seen, (arms) => arms.some((arm) => arm !== null && arm.low === arm.at && arm.high === arm.at)),
+  "quantile at a whole place": ({ plan, trace }) =>
+    count(plan.metrics, ({ name, quantile }) => {
+      const values = trace.result.metrics.find(({ metric }) => metric === name)?.values ?? [];
+      return plan.variants.some((_, at) => {
+        const n = count(values, ({ variant }) => variant === at);
+        return quantile !== null && n > 0 && Number.isInteger(Number((n * Number(quantile)).toFixed(9)));
+      });
+    }),
+  "quantile that decides": ({ plan }) =>
+    count(plan.metrics, ({ quantile, role }) => quantile !== null && role !== "secondary"),
+  "quantile that leaves units out": ({ plan, trace }) =>
+    count(
+      trace.result.metrics,
+      ({ metric, leftOut }) =>
+        leftOut.some((units) => units > 0) &&
+        plan.metrics.some(({ name, quantile }) => name === metric && quantile !== null),
+    ),
+};
+
+type Arms = NonNullable<OracleMetric["quantile"]>;
+
+const countQuantiles = ({ trace }: Seen, wanted: (arms: Arms) => boolean): number =>
+  count(trace.result.metrics, ({ quantile }) => quantile !== null && wanted(quantile));
+
 const plans: Rules = {
   "a log without time": ({ plan }) => plan.log.every(({ columns }) => columns.time === null),
   "a log without event": ({ plan }) => plan.log.every(({ columns }) => columns.event === null),
@@ -154,4 +195,4 @@ const plans: Rules = {
     plan.variants.some((_, at) => count(trace.units, ({ line, variant }) => line === "analysed" && variant === at) > 1),
 };
 
-export const valueRules: Rules = { ...aggregates, ...caps, ...plans };
+export const valueRules: Rules = { ...aggregates, ...caps, ...quantiles, ...plans };
