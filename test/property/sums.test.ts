@@ -44,7 +44,7 @@ function wrong(change: Partial<CellTable>): string[] {
     })),
     quantile: null,
   };
-  const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null } as unknown as MetricCells;
+  const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null, covariate: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);
 }
 
