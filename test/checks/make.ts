@@ -173,6 +173,7 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
     of,
     ratio: null,
     covariate: null,
+    sizes: null,
     choices: [],
     ends: [],
   };

@@ -123,6 +123,7 @@ function cellsOf(name: string, plan: Plan): MetricCells {
     of: noCells,
     ratio: null,
     covariate: null,
+    sizes: null,
     choices: [],
     ends: [],
   };
