@@ -3,6 +3,8 @@ import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
+import { type DistributionFigure, distributionFigures } from "./sections/distribution.ts";
+import { type FlowFigure, flowFigure } from "./sections/flow.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
@@ -24,6 +26,7 @@ export interface Page {
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
+  readonly flow: FlowFigure;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly power: PowerSection;
   readonly methods: MethodsSection;
@@ -31,6 +34,7 @@ export interface Page {
 
 /** What stands below a metric's tables. */
 export interface FurtherOnMetric {
+  readonly distribution: DistributionFigure | null;
   readonly sampling: readonly SamplingPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
@@ -50,6 +54,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
+  const distributions = await distributionFigures(plan, reduction);
   const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
@@ -64,8 +69,10 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
+    flow: await flowFigure(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
+      distribution: distributions.get(metric.name) ?? null,
       sampling: sampling.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.

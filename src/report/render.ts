@@ -15,6 +15,8 @@ const PARTIALS = [
   "checks",
   "counted",
   "metrics",
+  "distribution",
+  "flow",
   "sampling",
   "power",
   "methods",
@@ -29,7 +31,7 @@ export function renderPage(page: Page): string {
   const render = handlebars.compile<Page>(template("report.hbs"), {
     strict: true,
     knownHelpersOnly: true,
-    knownHelpers: { ownDrawingUnescaped: true },
+    knownHelpers: { ownDrawingUnescaped: true, lookup: true },
     preventIndent: true,
   });
   return render(typeset(page));
