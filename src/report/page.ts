@@ -1,8 +1,11 @@
-import { controlOf, whenText } from "./plan-words.ts";
+import { controlOf, kindText, whenText } from "./plan-words.ts";
+import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
+import { type ConsortTable, consortTable } from "./sections/consort.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
+import { type DesignSection, designSection } from "./sections/design.ts";
 import { type DistributionFigure, distributionFigures } from "./sections/distribution.ts";
 import { type FlowFigure, flowFigure } from "./sections/flow.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
@@ -17,6 +20,8 @@ export interface Page {
   readonly title: string;
   readonly experiment: string;
   readonly question: string;
+  /** "A randomised experiment: calendar against list." (CONSORT 1a) */
+  readonly kind: string;
   readonly when: string;
   readonly version: string;
   readonly undecidable: boolean;
@@ -25,11 +30,17 @@ export interface Page {
   readonly contents: readonly { readonly number: number; readonly id: string; readonly title: string }[];
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
+  readonly design: DesignSection;
   readonly counted: CountedSection;
   readonly flow: FlowFigure;
+  /** Null where the plan names nothing known before enrolment. */
+  readonly baseline: BaselineTable | null;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly power: PowerSection;
   readonly methods: MethodsSection;
+  readonly consort: ConsortTable;
+  /** By id, for the terms that link to their line in Methods: only lines that this report has. */
+  readonly terms: Readonly<Record<string, string>>;
 }
 
 /** What stands below a metric's tables. */
@@ -55,11 +66,14 @@ export async function page(inputs: ReportInputs): Promise<Page> {
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
   const distributions = await distributionFigures(plan, reduction);
+  const baseline = baselineTable(plan, reduction);
+  const methods = methodsSection(inputs);
   const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
     experiment: plan.experiment,
     question: plan.question,
+    kind: kindText(plan),
     when: whenText(plan, reduction),
     version: inputs.version,
     undecidable: conclusion.decision === "undecidable",
@@ -68,7 +82,12 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     contents: CONTENTS,
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
+    design: designSection(
+      plan,
+      effects.some(({ resampled }) => resampled !== null),
+    ),
     counted: countedSection(plan, reduction),
+    baseline,
     flow: await flowFigure(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
@@ -79,6 +98,8 @@ export async function page(inputs: ReportInputs): Promise<Page> {
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
     power: powerSection(plan, reduction, effects),
-    methods: methodsSection(inputs),
+    methods,
+    consort: consortTable(plan, reduction, baseline !== null),
+    terms: Object.fromEntries(methods.methods.map(({ id }) => [id, id])),
   };
 }

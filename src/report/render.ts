@@ -17,6 +17,10 @@ const PARTIALS = [
   "metrics",
   "distribution",
   "flow",
+  "term",
+  "baseline",
+  "consort",
+  "design",
   "sampling",
   "power",
   "methods",
@@ -26,12 +30,13 @@ const PARTIALS = [
 export function renderPage(page: Page): string {
   const handlebars = Handlebars.create();
   handlebars.registerHelper("ownDrawingUnescaped", ownDrawingUnescaped);
+  handlebars.registerHelper("cssText", cssText);
   for (const name of PARTIALS) handlebars.registerPartial(name, template(`partials/${name}.hbs`));
   handlebars.registerPartial("style", template("style.css"));
   const render = handlebars.compile<Page>(template("report.hbs"), {
     strict: true,
     knownHelpersOnly: true,
-    knownHelpers: { ownDrawingUnescaped: true, lookup: true },
+    knownHelpers: { ownDrawingUnescaped: true, cssText: true, lookup: true },
     preventIndent: true,
   });
   return render(typeset(page));
@@ -40,6 +45,20 @@ export function renderPage(page: Page): string {
 /** For drawings of charts/draw.ts only: they hold no text from a plan or a log except what that file escapes. */
 function ownDrawingUnescaped(drawing: Drawing): Handlebars.SafeString {
   return new Handlebars.SafeString(drawing.svg);
+}
+
+const MOST_TITLE = 80;
+
+/**
+ * A name from the plan inside a string of the style sheet, for the head of each printed page: every sign but Latin letters,
+ * digits and spaces stands as its number, so that none can end the string, the rule or the sheet.
+ */
+export function cssText(text: string): string {
+  const letters = [...text.replace(/\s+/g, " ")];
+  const shown = letters.length <= MOST_TITLE ? letters : [...letters.slice(0, MOST_TITLE - 1), "\u2026"];
+  return shown
+    .map((letter) => (/[A-Za-z0-9 ]/.test(letter) ? letter : `\\${(letter.codePointAt(0) ?? 0xfffd).toString(16)} `))
+    .join("");
 }
 
 function template(name: string): string {

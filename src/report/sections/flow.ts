@@ -64,7 +64,7 @@ export async function flowFigure(plan: Plan, { unitLines, unitsSeen }: Reduction
         variant: name,
         control: isControl,
         steps: [
-          total("begins", "enrolled", all),
+          total("begins", "enrolled", all, all === 0 ? "" : "100%"),
           ...steps.map((line) => left(plan, line.id, ofVariant(line.byVariant, v), all)),
           total("ends", "counted", counted, all === 0 ? "" : percent(counted / all)),
         ],
