@@ -15,6 +15,7 @@ import {
 } from "./decision/index.ts";
 import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
 import { version } from "./version.ts";
@@ -26,6 +27,8 @@ export interface CloseoutOptions {
   /** The report's folder; without it out/<experiment> in the current folder. */
   readonly out?: string | undefined;
   readonly threads?: number | undefined;
+  /** Writes figures/*.svg, page-one.html and decision.csv too. */
+  readonly figures?: boolean | undefined;
   /** As DuckDB writes sizes: "2GB". */
   readonly memory?: string | undefined;
   readonly progress?: ((progress: Progress) => void) | undefined;
@@ -74,7 +77,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
     }
     const rendered = await decisionReport(plan, planText, found);
     options.signal?.throwIfAborted();
-    const written = await folder.keep(rendered.files);
+    const kept = await folder.keep(rendered.files);
+    const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
     const terminal = rendered.terminal({
       report: path.join(folder.shown, "report.html"),
       summary: path.join(folder.shown, "summary.md"),

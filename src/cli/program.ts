@@ -1,8 +1,7 @@
 import { Command, CommanderError } from "commander";
-import type { CloseoutOptions } from "../index.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
-import { report } from "./report.ts";
+import { type ReportArguments, report } from "./report.ts";
 import { schema } from "./schema.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 import { unwritableText } from "./unwritable.ts";
@@ -69,6 +68,10 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
     .usage("PLAN [options]")
     .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
+    .option(
+      "--figures",
+      "also write each figure as SVG, page one alone, and decision.csv, a line for a log of decisions",
+    )
     .option("--threads <N>", "how many processor cores to use (default: all)")
     .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
     .option("--debug", "on a fault of closeout itself, print where it happened")
@@ -117,9 +120,10 @@ interface RawOptions {
   readonly out?: string;
   readonly threads?: string;
   readonly memory?: string;
+  readonly figures?: boolean;
 }
 
-function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptions, "out" | "threads" | "memory"> {
+function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["options"] {
   const problems: string[] = [];
   if (raw.out?.trim() === "") problems.push("--out needs the name of a folder.");
   if (raw.threads !== undefined && !/^[1-9]\d{0,3}$/.test(raw.threads)) {
@@ -133,6 +137,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptio
     ...(raw.out === undefined ? {} : { out: raw.out }),
     ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
     ...(raw.memory === undefined ? {} : { memory: raw.memory }),
+    ...(raw.figures === undefined ? {} : { figures: raw.figures }),
   };
 }
 

@@ -65,7 +65,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
-  const distributions = await distributionFigures(plan, reduction);
+  const distributions = await distributionFigures(plan, reduction, effects);
   const baseline = baselineTable(plan, reduction);
   const methods = methodsSection(inputs);
   const figures = await choiceFigures(plan, effects, inputs.choices);

@@ -2,11 +2,13 @@ import { readFileSync } from "node:fs";
 import Handlebars from "handlebars";
 import type { Drawing } from "./charts/draw.ts";
 import type { Page } from "./page.ts";
+import { pageOne } from "./page-one.ts";
 import { typeset } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
 const FOLDER = new URL("../../templates/", import.meta.url);
 const PARTIALS = [
+  "head",
   "decision",
   "forest",
   "choices",
@@ -28,18 +30,26 @@ const PARTIALS = [
 
 /** The page as HTML. Everything is escaped by Handlebars; the one door for other text is `ownDrawingUnescaped`. */
 export function renderPage(page: Page): string {
+  return rendered("report.hbs", typeset(page));
+}
+
+/** Page one alone, on one sheet: `fingerprint` tells whose it is. */
+export function renderPageOne(page: Page, fingerprint: string): string {
+  return rendered("page-one.hbs", { ...typeset(pageOne(page)), fingerprint });
+}
+
+function rendered(name: string, page: Page | (Page & { readonly fingerprint: string })): string {
   const handlebars = Handlebars.create();
   handlebars.registerHelper("ownDrawingUnescaped", ownDrawingUnescaped);
   handlebars.registerHelper("cssText", cssText);
-  for (const name of PARTIALS) handlebars.registerPartial(name, template(`partials/${name}.hbs`));
+  for (const partial of PARTIALS) handlebars.registerPartial(partial, template(`partials/${partial}.hbs`));
   handlebars.registerPartial("style", template("style.css"));
-  const render = handlebars.compile<Page>(template("report.hbs"), {
+  return handlebars.compile<typeof page>(template(name), {
     strict: true,
     knownHelpersOnly: true,
     knownHelpers: { ownDrawingUnescaped: true, cssText: true, lookup: true },
     preventIndent: true,
-  });
-  return render(typeset(page));
+  })(page);
 }
 
 /** For drawings of charts/draw.ts only: they hold no text from a plan or a log except what that file escapes. */

@@ -7,7 +7,7 @@ import { adopt, several } from "./cases.ts";
 import { textOf } from "./markup.ts";
 
 describe("the picture of how an arm's values lie", async () => {
-  const figures = await distributionFigures(adopt.plan, adopt.reduction);
+  const figures = await distributionFigures(adopt.plan, adopt.reduction, adopt.effects);
   const figure = figures.get("Fare per visitor");
   if (figure === undefined) throw new Error("no figure of the fare");
 

@@ -67,6 +67,6 @@ function shorten(content: string): string {
   );
 }
 
-function escaped(text: string): string {
+export function escaped(text: string): string {
   return withoutControls(text).replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
 }

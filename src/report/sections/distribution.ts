@@ -1,4 +1,5 @@
 import { type Bin, beyond, type Shape, shape } from "../../cells/index.ts";
+import type { Effect } from "../../decision/index.ts";
 import type { Reduction, SizeTable } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import { count, list, number, percent, plural } from "../../words/index.ts";
@@ -12,6 +13,7 @@ import {
 } from "../charts/distribution.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { lineStyle, theme } from "../charts/theme.ts";
+import { drawnEffects } from "../drawn.ts";
 import { controlOf } from "../plan-words.ts";
 
 /** How the values of each arm lie: what is at 0, the bulk, and the tail. */
@@ -36,11 +38,13 @@ interface Arm extends DrawnShape {
 export async function distributionFigures(
   plan: Plan,
   reduction: Reduction,
+  effects: readonly Effect[],
 ): Promise<ReadonlyMap<string, DistributionFigure>> {
   const found = new Map<string, DistributionFigure>();
+  const drawn = new Set([...drawnEffects(effects)].map((effect) => effect.metric));
   for (const [m, metric] of plan.metrics.entries()) {
     const sizes = reduction.metrics.find((cells) => cells.metric === metric.name)?.sizes ?? null;
-    if (sizes === null) continue;
+    if (sizes === null || (effects.length > 0 && !drawn.has(metric.name))) continue;
     const arms = armsOf(plan, sizes, isWhole(metric));
     if (arms.every((arm) => arm.shape.bins.length === 0)) continue;
     found.set(metric.name, await figure(metric, plan, arms, `shape-${m + 1}`));
