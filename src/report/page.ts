@@ -1,3 +1,4 @@
+import { namesToIsolate } from "./direction.ts";
 import { controlOf, kindText, whenText } from "./plan-words.ts";
 import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
@@ -39,6 +40,8 @@ export interface Page {
   readonly power: PowerSection;
   readonly methods: MethodsSection;
   readonly consort: ConsortTable;
+  /** Of the plan, those that run from right to left. */
+  readonly names: readonly string[];
   /** By id, for the terms that link to their line in Methods: only lines that this report has. */
   readonly terms: Readonly<Record<string, string>>;
 }
@@ -100,6 +103,10 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     power: powerSection(plan, reduction, effects),
     methods,
     consort: consortTable(plan, reduction, baseline !== null),
+    names: namesToIsolate([
+      plan.experiment,
+      ...[...plan.metrics, ...plan.variants, ...plan.filters].map(({ name }) => name),
+    ]),
     terms: Object.fromEntries(methods.methods.map(({ id }) => [id, id])),
   };
 }

@@ -1,4 +1,5 @@
 import { nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
+import { directed, namesToIsolate } from "./direction.ts";
 import { whenText } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
 import type { ReportInputs } from "./types.ts";
@@ -17,7 +18,12 @@ export function summaryMd(inputs: ReportInputs): string {
     ...sentences(inputs).map((sentence) => `- ${plain(sentence)}`),
     ...answers(inputs).map(({ question, answer }) => `- ${question} ${plain(answer)}`),
   ];
-  return `${lines.join("\n")}\n`;
+  const names = namesToIsolate([
+    plan.experiment,
+    ...plan.metrics.map(({ name }) => name),
+    ...plan.variants.map(({ name }) => name),
+  ]);
+  return `${lines.map((line) => directed(line, names)).join("\n")}\n`;
 }
 
 /** What was found, and what it amounts to or what to do until it is settled; of many the first. */

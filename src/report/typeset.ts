@@ -1,3 +1,4 @@
+import { directed } from "./direction.ts";
 import type { Page } from "./page.ts";
 
 /**
@@ -6,17 +7,18 @@ import type { Page } from "./page.ts";
  */
 export function typeset(page: Page): Page {
   const { planText } = page.methods;
-  const set = everyText(page) as Page;
-  return { ...set, methods: { ...set.methods, planText } };
+  const names = page.names.map(withoutControls);
+  const set = everyText(page, (text) => directed(quotes(unbroken(withoutControls(text))), names)) as Page;
+  return { ...set, names: page.names, terms: page.terms, methods: { ...set.methods, planText } };
 }
 
-function everyText(value: unknown): unknown {
-  if (typeof value === "string") return quotes(unbroken(withoutControls(value)));
-  if (Array.isArray(value)) return value.map(everyText);
+function everyText(value: unknown, set: (text: string) => string): unknown {
+  if (typeof value === "string") return set(value);
+  if (Array.isArray(value)) return value.map((item) => everyText(item, set));
   if (typeof value !== "object" || value === null) return value;
   // a drawing is markup of our own, not a text
   if ("svg" in value) return value;
-  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, everyText(item)]));
+  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, everyText(item, set)]));
 }
 
 /**
