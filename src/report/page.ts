@@ -15,6 +15,7 @@ import { type PowerSection, powerSection } from "./sections/power.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
+import { withoutControls } from "./typeset.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
 export interface Page {
@@ -42,6 +43,8 @@ export interface Page {
   readonly consort: ConsortTable;
   /** Of the plan, those that run from right to left. */
   readonly names: readonly string[];
+  /** Of measure, as the plan calls them. */
+  readonly units: readonly string[];
   /** By id, for the terms that link to their line in Methods: only lines that this report has. */
   readonly terms: Readonly<Record<string, string>>;
 }
@@ -103,6 +106,11 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     power: powerSection(plan, reduction, effects),
     methods,
     consort: consortTable(plan, reduction, baseline !== null),
+    units: [
+      ...new Set(
+        plan.metrics.flatMap(({ unitOfMeasure }) => (unitOfMeasure === null ? [] : [withoutControls(unitOfMeasure)])),
+      ),
+    ],
     names: namesToIsolate([
       plan.experiment,
       ...[...plan.metrics, ...plan.variants, ...plan.filters].map(({ name }) => name),

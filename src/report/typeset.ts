@@ -8,8 +8,10 @@ import type { Page } from "./page.ts";
 export function typeset(page: Page): Page {
   const { planText } = page.methods;
   const names = page.names.map(withoutControls);
-  const set = everyText(page, (text) => directed(quotes(unbroken(withoutControls(text))), names)) as Page;
-  return { ...set, names: page.names, terms: page.terms, methods: { ...set.methods, planText } };
+  const set = everyText(page, (text) =>
+    directed(quotes(withUnits(unbroken(withoutControls(text)), page.units)), names),
+  ) as Page;
+  return { ...set, names: page.names, units: page.units, terms: page.terms, methods: { ...set.methods, planText } };
 }
 
 function everyText(value: unknown, set: (text: string) => string): unknown {
@@ -35,4 +37,12 @@ export function quotes(text: string): string {
 
 export function unbroken(text: string): string {
   return text.replace(/\bp ([<=]) (?=\d)/g, "p\u00a0$1\u00a0").replace(/(\d%) (?=intervals?\b)/g, "$1\u00a0");
+}
+
+/** A figure and its unit of measure stay on one line: "0.018 s". */
+export function withUnits(text: string, units: readonly string[]): string {
+  return units.reduce((set, unit) => {
+    const escaped = unit.replace(/[.*+?^${}()|[\]\\]/g, "\\$&");
+    return set.replace(new RegExp(`(\\d) (?=${escaped}(?![\\p{L}\\p{Nd}]))`, "gu"), "$1\u00a0");
+  }, text);
 }
