@@ -38,6 +38,8 @@ export interface Page {
   /** Null where the plan names nothing known before enrolment. */
   readonly baseline: BaselineTable | null;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
+  /** Then section 5 begins with a list of them. */
+  readonly severalMetrics: boolean;
   readonly power: PowerSection;
   readonly methods: MethodsSection;
   readonly consort: ConsortTable;
@@ -103,6 +105,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
+    severalMetrics: plan.metrics.length > 1,
     power: powerSection(plan, reduction, effects),
     methods,
     consort: consortTable(plan, reduction, baseline !== null),
