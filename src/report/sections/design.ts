@@ -99,7 +99,7 @@ function rule(plan: Plan): Fact[] {
           ? "When the whole interval is a gain."
           : "When the whole interval is beyond what was asked for.",
     },
-    { name: "Confidence", value: `${planPercent(decision.confidence)} for every interval.` },
+    { name: "Confidence", value: `${planPercent(decision.confidence)}.` },
     { name: "Power", value: `${planPercent(decision.power)}, for sizes.` },
   ];
 }
