@@ -3,6 +3,7 @@ import Handlebars from "handlebars";
 import type { Drawing } from "./charts/draw.ts";
 import type { Page } from "./page.ts";
 import { pageOne } from "./page-one.ts";
+import { termParts } from "./terms.ts";
 import { typeset } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
@@ -20,6 +21,7 @@ const PARTIALS = [
   "distribution",
   "flow",
   "term",
+  "told",
   "baseline",
   "consort",
   "design",
@@ -42,12 +44,13 @@ function rendered(name: string, page: Page | (Page & { readonly fingerprint: str
   const handlebars = Handlebars.create();
   handlebars.registerHelper("ownDrawingUnescaped", ownDrawingUnescaped);
   handlebars.registerHelper("cssText", cssText);
+  handlebars.registerHelper("termParts", termParts);
   for (const partial of PARTIALS) handlebars.registerPartial(partial, template(`partials/${partial}.hbs`));
   handlebars.registerPartial("style", template("style.css"));
   return handlebars.compile<typeof page>(template(name), {
     strict: true,
     knownHelpersOnly: true,
-    knownHelpers: { ownDrawingUnescaped: true, cssText: true, lookup: true },
+    knownHelpers: { ownDrawingUnescaped: true, cssText: true, termParts: true, lookup: true },
     preventIndent: true,
   })(page);
 }

@@ -36,9 +36,10 @@ export function methodsSection({
   reduction,
   effects,
   choices,
+  conclusion,
 }: ReportInputs): MethodsSection {
   return {
-    methods: methods(plan, effects, choices, reduction),
+    methods: methods(plan, effects, choices, reduction, conclusion.decision !== "undecidable"),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
     facts: facts(plan, planSha256, version, reduction),
@@ -79,6 +80,7 @@ function methods(
   effects: readonly Effect[],
   choices: readonly Choices[],
   reduction: Reduction,
+  isDecided: boolean,
 ): MethodsSection["methods"] {
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
@@ -187,7 +189,8 @@ function methods(
         "Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity analysis",
     },
     {
-      when: effects.some(({ role, zone }) => role !== "secondary" && zone !== "not-settled"),
+      // on an undecidable report nothing is told that could turn
+      when: isDecided && effects.some(({ role, zone }) => role !== "secondary" && zone !== "not-settled"),
       name: "What would turn it",
       how: `The level at which the ${many} of a variant that were not counted would carry the end of the interval to the limit it has passed, were those of the control like its counted ones and the interval as wide as it is.`,
       source:
