@@ -8,12 +8,13 @@ import { isFile, neighbours } from "./files.ts";
 import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { readLists } from "./lists.ts";
-import { logEnd } from "./logEnd.ts";
+import { logEnd, type SourceSpan, spansOf } from "./logEnd.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import { openSession, type Session } from "./session.ts";
+import { soundness } from "./soundness.ts";
 import {
   atEnrolment,
   candidates,
@@ -122,7 +123,8 @@ async function stages(
   const [range = {}] = await engine.query(timeRange());
   const firstUs = wholeOrNull(range, "first_us");
   const lastUs = wholeOrNull(range, "last_us");
-  const logEndUs = layout.hasTime ? await endOfLog(layout, engine) : null;
+  const spans = layout.hasTime ? await spansOfLog(layout, engine) : [];
+  const logEndUs = logEnd(spans);
   const key = enrolmentKey(plan, firstUs, lastUs);
   await engine.run(seen(plan, layout, key));
   if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
@@ -138,6 +140,7 @@ async function stages(
   const metrics = await metricCells(plan, values, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
+  const sound = await soundness(plan, { layout, key, days, spans, logEndUs, account }, found.enrolled, engine);
   const prints = await fingerprints;
   if (options.rejectsTo !== undefined) {
     await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
@@ -153,7 +156,7 @@ async function stages(
     })),
     lists,
     ...account,
-    facts: found,
+    facts: { ...found, soundness: sound },
     metrics,
   };
   return { reduction, values };
@@ -167,9 +170,9 @@ async function firstEnrolmentDay(plan: Plan, layout: Layout, engine: Engine): Pr
   return firstUs === null ? null : localDay(firstUs, plan.timezone);
 }
 
-async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {
+async function spansOfLog(layout: Layout, engine: Engine): Promise<SourceSpan[]> {
   const bins = await engine.query(timeBins(layout));
-  return logEnd(
+  return spansOf(
     bins.map((row) => ({
       source: count(row, "source"),
       rows: count(row, "rows"),

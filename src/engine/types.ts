@@ -3,6 +3,8 @@
  * except the rejected rows, which go to a file.
  */
 
+import type { SoundnessFacts } from "./soundnessTypes.ts";
+
 /** Counts per variant, in plan order. */
 export type ByVariant = readonly number[];
 
@@ -56,6 +58,7 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  readonly soundness: SoundnessFacts;
 }
 export interface ValueCount {
   readonly value: string;

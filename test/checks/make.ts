@@ -1,3 +1,4 @@
+import type { SoundnessFacts } from "../../src/engine/soundnessTypes.ts";
 import type { Facts, MetricCells, Reduction } from "../../src/engine/types.ts";
 import type { Filter, Metric, Plan } from "../../src/plan/types.ts";
 
@@ -85,7 +86,8 @@ export interface LogShape {
   readonly rejectReasons?: Reduction["rejectReasons"];
   /** Analysed units without a value, by metric. */
   readonly leftOut?: Readonly<Record<string, readonly number[]>>;
-  readonly facts?: Partial<Omit<Facts, "enrolled">>;
+  readonly facts?: Partial<Omit<Facts, "enrolled" | "soundness">>;
+  readonly soundness?: Partial<SoundnessFacts>;
 }
 
 /** A reduction whose ledgers add up as the engine's do. */
@@ -132,9 +134,26 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       lastEnrolledUs: null,
       logEndUs: null,
       ...shape.facts,
+      soundness: { ...soundnessOf(plan, enrolled), ...shape.soundness },
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
     rejectReasons: shape.rejectReasons ?? [],
+  };
+}
+
+/** Where nothing is said of days, hours or filters: no fault, and no time. */
+export function soundnessOf(plan: Plan, enrolled: readonly number[]): SoundnessFacts {
+  const rowFilters = plan.filters.filter(({ drop }) => drop === "rows");
+  const lines = ["rejected", "duplicate", ...rowFilters.map(({ name }) => `filter:${name}`)];
+  return {
+    days: null,
+    beforeLines: lines.map((id) => ({ line: id, byVariant: enrolled })),
+    enrolling: { units: enrolled, taken: rowFilters.map(() => plan.variants.map(() => 0)) },
+    byMetricRows: null,
+    keptUnfollowed: null,
+    valuesOfFilters: [],
+    sources: [],
+    silences: [],
   };
 }
 

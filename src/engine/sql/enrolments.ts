@@ -7,21 +7,22 @@ import { join, name, type Statement, sql } from "./sql.ts";
  * A row's place among those that may enrol its unit, as one integer: time first, then the variant in plan order (names
  * that the plan lacks after those it has). min() of it settles time, ties and variant at once.
  */
-interface Key {
+export interface EnrolmentKey {
   readonly baseUs: bigint;
   readonly places: bigint;
   /** Whether the span of times needs 128 bits. */
   readonly wide: boolean;
 }
 
-export function enrolmentKey(plan: Plan, firstUs: bigint | null, lastUs: bigint | null): Key {
+export function enrolmentKey(plan: Plan, firstUs: bigint | null, lastUs: bigint | null): EnrolmentKey {
   let places = 2n;
   while (places < BigInt(plan.variants.length) + 1n) places *= 2n;
   const span = firstUs === null || lastUs === null ? 0n : lastUs - firstUs;
   return { baseUs: firstUs ?? 0n, places, wide: (span + 1n) * places >= 1n << 62n };
 }
 
-function keyOf(key: Key): Statement {
+/** Over a row of `rows`. */
+export function keyOf(key: EnrolmentKey): Statement {
   const at = key.wide ? sql`CAST(coalesce(at_us, ${key.baseUs}) AS HUGEINT)` : sql`coalesce(at_us, ${key.baseUs})`;
   return sql`(${at} - ${key.baseUs}) * ${key.places} + variant`;
 }
@@ -32,7 +33,7 @@ function keyOf(key: Key): Statement {
  * Writes  seen: unit, key (NULL: no row enrols it), switched (whether its rows name two variants of the plan), rows, e<i>
  *         (whether some row meets unit filter condition i)
  */
-export function seen(plan: Plan, layout: Layout, key: Key): Statement {
+export function seen(plan: Plan, layout: Layout, key: EnrolmentKey): Statement {
   const flags = layout.flags.map((_, i) => sql`bool_or(${name(`w${i}`)}) AS ${name(`e${i}`)}`);
   const ofPlan = sql`variant < ${plan.variants.length}`;
   return sql`
@@ -55,7 +56,7 @@ export function seen(plan: Plan, layout: Layout, key: Key): Statement {
  * Reads   rows, seen
  * Writes  at_enrolment: unit, a<i> (unit filter condition i on the enrolling row), z<c> (a covariate column's value on it)
  */
-export function atEnrolment(layout: Layout, key: Key): Statement {
+export function atEnrolment(layout: Layout, key: EnrolmentKey): Statement {
   const taken = [
     ...layout.flags.map((_, i) => sql`${name(`w${i}`)} AS ${name(`a${i}`)}`),
     ...layout.covariateColumns.map((c) => sql`${name(`v${c}`)} AS ${name(`z${c}`)}`),
@@ -95,7 +96,7 @@ export const needsEnrollingRow = (layout: Layout): boolean =>
  *         choices whether the unit were analysed if units in two variants were treated the other way (other_way) or if
  *         follow-up need not be complete (any_follow_up)
  */
-export function enrolments(plan: Plan, layout: Layout, key: Key, logEndUs: bigint | null): Statement {
+export function enrolments(plan: Plan, layout: Layout, key: EnrolmentKey, logEndUs: bigint | null): Statement {
   const variants = plan.variants.length;
   const ids = unitLineIds(plan);
   const line = (id: string) => ids.indexOf(id);
