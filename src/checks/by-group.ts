@@ -54,7 +54,7 @@ function judge(
   const { chiSquare, df, p } = test;
   const result = byP(p);
   const verb = stage === "enrolled" ? "enrolled" : "counted";
-  const figures = { chiSquare, df, p };
+  const figures = { stage, chiSquare, df, p };
   if (result === "pass") {
     const sentence = `Of those ${verb}, the split is the same ${grouping.everywhere}, as far as chance goes (${pText(p)}).`;
     return { about: grouping.about(stage), result, strong: false, sentence, remedy: "", figures };
