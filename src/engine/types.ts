@@ -56,7 +56,21 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** One a subgroup column of the plan, in plan order. */
+  readonly subgroups: readonly SubgroupColumn[];
 }
+
+/** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */
+export interface SubgroupColumn {
+  readonly column: string;
+  /** The 12 largest by enrolled units, ties by text; then the rest as one; then the units whose value is missing. */
+  readonly levels: readonly { readonly level: Level; readonly enrolled: ByVariant }[];
+}
+/** A kind and not a text: a log may well have a value "other". */
+export type Level =
+  | { readonly kind: "value"; readonly text: string }
+  | { readonly kind: "rest"; readonly levels: number }
+  | { readonly kind: "missing" };
 export interface ValueCount {
   readonly value: string;
   readonly rows: number;
