@@ -25,6 +25,7 @@ import {
   enrolmentRange,
   enrolments,
   markDuplicates,
+  name,
   needsEnrollingRow,
   seen,
   timeBins,
@@ -138,7 +139,8 @@ async function stages(
   await engine.run(units());
   stage("adding up cells", 0.9);
   const values = await metricValues(plan, layout, engine, dialect);
-  const metrics = await metricCells(plan, values, engine, dialect);
+  const groupings = { day: layout.hasTime ? name("day") : null, levels: subgroups.map((_, s) => name(`k${s}`)) };
+  const { metrics, groups: metricGroups } = await metricCells(plan, values, groupings, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
   const bySubgroup = subgroups.map((subgroup) => subgroup.found);
@@ -159,6 +161,7 @@ async function stages(
     ...account,
     facts: { ...found, subgroups: bySubgroup },
     metrics,
+    groups: metricGroups,
   };
   return { reduction, values };
 }

@@ -20,6 +20,8 @@ export interface Reduction {
   readonly facts: Facts;
   /** One a metric, in plan order. */
   readonly metrics: readonly MetricCells[];
+  /** The same over other groups of the analysed units than buckets; one a metric, in plan order. */
+  readonly groups: readonly MetricGroups[];
   /** Rejected rows by reason, most frequent first. */
   readonly rejectReasons: readonly { readonly reason: string; readonly rows: number }[];
 }
@@ -100,6 +102,21 @@ export interface MetricCells {
    * score, of several the one with the smallest pair; x is its ratio's denominator or its covariate.
    */
   readonly ends: readonly (UnitEnds | null)[];
+}
+
+/** One metric's cells by what divides the analysed units. Quantiles have none. */
+export interface MetricGroups {
+  readonly metric: string;
+  /** By the local day of enrolment, as days since 1970-01-01; null without time. */
+  readonly byDay: GroupCells | null;
+  /** One a subgroup column of the plan; the group is the place of the level in `Facts.subgroups`. */
+  readonly byLevel: readonly GroupCells[];
+}
+
+/** Cells whose `bucket` is the group; joint sums of a ratio's two parts, or of a value and its covariate. */
+export interface GroupCells {
+  readonly of: CellTable;
+  readonly joint: JointTable | null;
 }
 
 export type OtherCells =
