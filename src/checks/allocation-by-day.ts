@@ -1,6 +1,6 @@
 import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
-import { dateText, dayOfEpoch, daysText } from "../words/index.ts";
+import { dayOfEpoch, daysText } from "../words/index.ts";
 import { byGroup, type Grouping } from "./by-group.ts";
 import { asCheck } from "./finding.ts";
 import type { Check } from "./types.ts";
@@ -10,8 +10,8 @@ export function allocationByDay(plan: Plan, reduction: Reduction): Check | null 
   const grouping = days(plan, reduction);
   if (grouping === null) return null;
   const findings = byGroup(plan, reduction, grouping);
-  const [first] = findings;
-  return asCheck("allocation-by-day", findings, first === undefined ? {} : testOf(first.figures));
+  const [enrolled, analysed] = findings.map(({ figures }) => testOf(figures));
+  return asCheck("allocation-by-day", findings, { ...enrolled, ...(analysed === undefined ? {} : { analysed }) });
 }
 
 const testOf = ({ chiSquare = 0, df = 0, p = 1 }: Check["figures"]) => ({ chiSquare, df, p });
@@ -45,5 +45,3 @@ function isoDay(day: number): string {
   const { year, month, day: date } = dayOfEpoch(day);
   return [String(year).padStart(4, "0"), String(month).padStart(2, "0"), String(date).padStart(2, "0")].join("-");
 }
-
-export const dayText = (day: number): string => dateText(dayOfEpoch(day));

@@ -3,6 +3,7 @@ import type { Plan } from "../plan/types.ts";
 import { pearson } from "../stats/index.ts";
 import { pText } from "../words/index.ts";
 import { days } from "./allocation-by-day.ts";
+import { levelGroupings } from "./allocation-by-level.ts";
 import type { Grouping } from "./by-group.ts";
 import { added } from "./flow.ts";
 import { groupsAlike, groupsOff } from "./groups.ts";
@@ -16,7 +17,8 @@ import { groups as groupsText } from "./words.ts";
  * where the split is alike on all of them, or the rest is uneven too.
  */
 export function whereItLies(plan: Plan, reduction: Reduction, stage: "enrolled" | "analysed"): string[] {
-  const groupings = [days(plan, reduction)].filter((grouping) => grouping !== null);
+  const byDay = days(plan, reduction);
+  const groupings = [...(byDay === null ? [] : [byDay]), ...levelGroupings(plan, reduction)];
   return groupings.flatMap((grouping) => lies(plan, grouping, stage));
 }
 

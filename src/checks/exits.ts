@@ -28,7 +28,7 @@ function judge(plan: Plan, step: Step): Finding[] {
   const result = byP(p);
   const figures = { p, left: perVariant(plan, removed), of: perVariant(plan, step.before) };
   const name = lineInWords(plan, step.line);
-  const sentence = `${capital(name)} took ${groupShares(plan, removed, step.before)}. ${ofDifference(p)}`;
+  const sentence = `${capital(many)} who left at ${name}: ${groupShares(plan, removed, step.before)}. ${ofDifference(p)}`;
   if (result === "pass") return [passed(step.line, sentence, figures)];
   const past = looksPast(plan, step.line)
     ? " It looks past enrolment, so the variant can change who is removed."

@@ -2,6 +2,7 @@ import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { allocation } from "./allocation.ts";
 import { allocationByDay } from "./allocation-by-day.ts";
+import { allocationByLevel } from "./allocation-by-level.ts";
 import { balance } from "./balance.ts";
 import { denominator } from "./denominator.ts";
 import { duplicates } from "./duplicates.ts";
@@ -28,6 +29,7 @@ export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./
 const CHECKS: readonly ((plan: Plan, reduction: Reduction, contrasts: readonly ContrastFigures[]) => Check | null)[] = [
   allocation,
   allocationByDay,
+  allocationByLevel,
   exits,
   rejected,
   duplicates,

@@ -99,7 +99,7 @@ export function reasonText(reason: number, layout: Layout): string {
   return isRange ? `out of range: ${column}` : `not a number: ${column}`;
 }
 
-type CountedFacts = Omit<Facts, "soundness">;
+type CountedFacts = Omit<Facts, "soundness" | "subgroups">;
 
 /** What the checks look at. */
 export async function facts(

@@ -24,6 +24,7 @@ import {
   localDay,
   rowsByHour,
   rowsByHourAndVariant,
+  type Statement,
   sql,
   unfollowed,
   unitsInRuns,
@@ -35,6 +36,8 @@ interface Stages {
   readonly layout: Layout;
   readonly key: EnrolmentKey;
   readonly days: readonly Step<DayRun>[];
+  /** A unit's level of each subgroup column, over enrolments. */
+  readonly levels: readonly Statement[];
   readonly spans: readonly SourceSpan[];
   readonly logEndUs: bigint | null;
   readonly account: Pick<Reduction, "rowLines" | "unitLines">;
@@ -51,6 +54,7 @@ export async function soundness(
   const fates = (await engine.query(fatesOfEnrolling())).map((row) => count(row, "fate")).sort((a, b) => a - b);
   return {
     days: layout.hasTime ? await enrolmentDays(plan, stages, engine) : null,
+    levels: await endedByLevel(plan, stages, engine),
     beforeLines: await beforeLines(plan, layout, fates, enrolled, engine),
     enrolling: await enrollingRows(plan, layout, fates, enrolled, engine),
     byMetricRows: await byMetricRows(plan, stages, engine),
@@ -66,8 +70,18 @@ async function enrolmentDays(plan: Plan, { days }: Stages, engine: Engine): Prom
   return found.map((day) => ({ day, ...endedUnits(plan, rows, day) }));
 }
 
+async function endedByLevel(plan: Plan, { levels }: Stages, engine: Engine): Promise<EndedUnits[][]> {
+  const found: EndedUnits[][] = [];
+  for (const code of levels) {
+    const rows = await engine.query(endedByGroup(code, unknownLine(plan)));
+    const places = [...new Set(rows.map((row) => count(row, "place")))].sort((a, b) => a - b);
+    found.push(places.map((place) => endedUnits(plan, rows, place)));
+  }
+  return found;
+}
+
 /** One group's units by the lines after unknown-variant, and variant. */
-export function endedUnits(plan: Plan, rows: readonly Row[], place: number): EndedUnits {
+function endedUnits(plan: Plan, rows: readonly Row[], place: number): EndedUnits {
   const own = rows.filter((row) => count(row, "place") === place);
   return {
     ended: unitLineIds(plan)

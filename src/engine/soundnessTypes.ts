@@ -5,6 +5,8 @@ import type { ByVariant, ValueCount } from "./types.ts";
 export interface SoundnessFacts {
   /** Enrolled units by the local day of their enrolment, earliest first; null in a log without time. */
   readonly days: readonly DayOfEnrolment[] | null;
+  /** One a subgroup column, in plan order: its levels in the order of `facts.subgroups`. */
+  readonly levels: readonly (readonly EndedUnits[])[];
   /**
    * One a line of the row ledger that can take an enrolling row (rejected, duplicate, the row filters), in its order: the
    * units that would be enrolled, by first variant, if this line and those after it took no row.

@@ -27,6 +27,7 @@ export function planOf(changes: Partial<Plan> = {}): Plan {
     followUp: null,
     metrics: [metricOf({ name: "Booked", role: "primary" })],
     filters: [],
+    subgroups: [],
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: null,
     forecast: null,
@@ -133,10 +134,12 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       firstEnrolledUs: null,
       lastEnrolledUs: null,
       logEndUs: null,
+      subgroups: [],
       ...shape.facts,
       soundness: { ...soundnessOf(plan, enrolled), ...shape.soundness },
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [] })),
     rejectReasons: shape.rejectReasons ?? [],
   };
 }
@@ -147,6 +150,7 @@ export function soundnessOf(plan: Plan, enrolled: readonly number[]): SoundnessF
   const lines = ["rejected", "duplicate", ...rowFilters.map(({ name }) => `filter:${name}`)];
   return {
     days: null,
+    levels: [],
     beforeLines: lines.map((id) => ({ line: id, byVariant: enrolled })),
     enrolling: { units: enrolled, taken: rowFilters.map(() => plan.variants.map(() => 0)) },
     byMetricRows: null,

@@ -1,6 +1,7 @@
 import { type ColumnTable, op, escape as rowwise } from "arquero";
 import type { Plan } from "../../src/plan/types.ts";
 import { countCopies, rowAt, type SettledRow, settleRows } from "./ledger.ts";
+import { enrolledOf, levelsOf } from "./levels.ts";
 import { byVariant, metricOf } from "./metrics.ts";
 import { ascending } from "./number.ts";
 import { readRows } from "./rows.ts";
@@ -87,8 +88,6 @@ function counts(ended: ColumnTable): Map<string, number> {
   return new Map(lines.map(({ line, rows }) => [line, rows]));
 }
 
-const NOT_ENROLLED = ["not-enrolled", "outside-enrolment", "unknown-variant"];
-
 function factsOf(
   plan: Plan,
   rows: readonly Row[],
@@ -96,7 +95,7 @@ function factsOf(
   units: readonly Unit[],
   end: bigint | null,
 ): OracleFacts {
-  const enrolled = units.filter(({ line }) => !NOT_ENROLLED.includes(line));
+  const enrolled = enrolledOf(units);
   const unitsOn = (line: string) => new Set(ended.filter((row) => row.line === line).map(({ unit }) => unit));
   const rejected = unitsOn("rejected");
   const duplicate = unitsOn("duplicate");
@@ -124,6 +123,7 @@ function factsOf(
     firstEnrolledUs: times[0] ?? null,
     lastEnrolledUs: times.at(-1) ?? null,
     logEndUs: end,
+    subgroups: plan.subgroups.map((column) => levelsOf(plan, column, enrolled)),
   };
 }
 

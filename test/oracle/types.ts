@@ -48,6 +48,7 @@ export type OracleFacts = Pick<
   | "firstEnrolledUs"
   | "lastEnrolledUs"
   | "logEndUs"
+  | "subgroups"
 >;
 
 /** One analysed unit's value of a metric, in 10^-9, after the cap. */

@@ -1,6 +1,7 @@
 import type { Plan } from "../../plan/types.ts";
 import { FATE, type Layout, unitLineIds } from "../layout.ts";
 import { contentOrder } from "./duplicates.ts";
+import { stored } from "./rows.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /**
@@ -54,12 +55,14 @@ export function seen(plan: Plan, layout: Layout, key: EnrolmentKey): Statement {
  * Stage 5: each unit's enrolling row, for what is judged at enrolment. Several rows of a unit may stand at its key: the
  * first in canonical order is taken, and only such units are ordered.
  * Reads   rows, seen
- * Writes  at_enrolment: unit, a<i> (unit filter condition i on the enrolling row), z<c> (a covariate column's value on it)
+ * Writes  at_enrolment: unit, a<i> (unit filter condition i on the enrolling row), z<c> (a covariate column's value on it),
+ *         g<c> (a subgroup column's)
  */
 export function atEnrolment(layout: Layout, key: EnrolmentKey): Statement {
   const taken = [
     ...layout.flags.map((_, i) => sql`${name(`w${i}`)} AS ${name(`a${i}`)}`),
     ...layout.covariateColumns.map((c) => sql`${name(`v${c}`)} AS ${name(`z${c}`)}`),
+    ...layout.subgroupColumns.map((c) => sql`${stored(layout, c)} AS ${name(`g${c}`)}`),
   ];
   const order = join([sql`other_variant ASC NULLS LAST`, ...contentOrder(layout)], ", ");
   return sql`
@@ -87,12 +90,14 @@ export function atEnrolment(layout: Layout, key: EnrolmentKey): Statement {
 
 /** Whether something is judged, or taken, at enrolment. */
 export const needsEnrollingRow = (layout: Layout): boolean =>
-  layout.covariateColumns.length > 0 || layout.unitFilters.some((filter) => filter.kind === "at-enrolment");
+  layout.covariateColumns.length > 0 ||
+  layout.subgroupColumns.length > 0 ||
+  layout.unitFilters.some((filter) => filter.kind === "at-enrolment");
 
 /**
  * Stage 6: each unit and the line on which it ends (DESIGN 4, rule 6), first that applies.
  * Reads   seen, at_enrolment (where something is judged at enrolment), list_<i>
- * Writes  enrolments: unit, rows, enrolled_us, variant, switched, line (index into unitLineIds), and for other reasonable
+ * Writes  enrolments: unit, rows, enrolled_us, variant, switched, z<c> and g<c> of stage 5, line (index into unitLineIds), and for other reasonable
  *         choices whether the unit were analysed if units in two variants were treated the other way (other_way) or if
  *         follow-up need not be complete (any_follow_up)
  */
@@ -133,6 +138,7 @@ export function enrolments(plan: Plan, layout: Layout, key: EnrolmentKey, logEnd
     SELECT ${list([
       sql`unit, rows, enrolled_us, variant, switched`,
       ...layout.covariateColumns.map((c) => name(`z${c}`)),
+      ...layout.subgroupColumns.map((c) => name(`g${c}`)),
       sql`${ends(isExcluding ? switchers : [], filters, late)} AS line`,
       sql`${ends(isExcluding ? [] : switchers, filters, late)} = ${analysed} AS other_way`,
       sql`${ends(isExcluding ? switchers : [], filters)} = ${analysed} AS any_follow_up`,

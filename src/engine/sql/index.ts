@@ -7,6 +7,8 @@ export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
 export { atEnrolment, type EnrolmentKey, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
+/** Levels of subgroup columns. */
+export * from "./levels.ts";
 /** Order statistics. */
 export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
