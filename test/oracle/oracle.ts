@@ -5,6 +5,7 @@ import { enrolledOf, levelsOf } from "./levels.ts";
 import { byVariant, metricOf } from "./metrics.ts";
 import { ascending } from "./number.ts";
 import { readRows } from "./rows.ts";
+import { soundnessOf } from "./soundness.ts";
 import { logEnd, partsOf } from "./span.ts";
 import { type Clock, clockOf } from "./time.ts";
 import type { Lists, OracleFacts, OracleResult, RawFile, Row } from "./types.ts";
@@ -58,7 +59,7 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       const nameless = id === "not-enrolled" || id === "unknown-variant";
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
-    facts: factsOf(plan, rows, ended, units, end),
+    facts: factsOf(plan, rows, ended, units, end, clock),
     metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
   };
   return { clock, rows, ended, units, result };
@@ -94,6 +95,7 @@ function factsOf(
   ended: readonly EndedRow[],
   units: readonly Unit[],
   end: bigint | null,
+  clock: Clock,
 ): OracleFacts {
   const enrolled = enrolledOf(units);
   const unitsOn = (line: string) => new Set(ended.filter((row) => row.line === line).map(({ unit }) => unit));
@@ -124,6 +126,13 @@ function factsOf(
     lastEnrolledUs: times.at(-1) ?? null,
     logEndUs: end,
     subgroups: plan.subgroups.map((column) => levelsOf(plan, column, enrolled)),
+    soundness: soundnessOf(
+      plan,
+      ended.map(({ at, line }) => ({ row: rowAt(rows, at), line })),
+      units,
+      end,
+      clock,
+    ),
   };
 }
 

@@ -49,6 +49,7 @@ export type OracleFacts = Pick<
   | "lastEnrolledUs"
   | "logEndUs"
   | "subgroups"
+  | "soundness"
 >;
 
 /** One analysed unit's value of a metric, in 10^-9, after the cap. */
