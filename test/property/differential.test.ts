@@ -9,6 +9,7 @@ import { drawForm, type Form } from "../oracle/random/write.ts";
 import { covariateRules } from "./rules/covariates.ts";
 import { ledgerRules } from "./rules/ledger.ts";
 import type { Rules } from "./rules/seen.ts";
+import { soundnessRules } from "./rules/soundness.ts";
 import { subgroupRules } from "./rules/subgroups.ts";
 import { timeRules } from "./rules/time.ts";
 import { valueRules } from "./rules/values.ts";
@@ -22,6 +23,7 @@ const SEEDS = Array.from({ length: Number(process.env.SEEDS ?? 500) }, (_, at) =
 const RULES: Rules = {
   ...covariateRules,
   ...ledgerRules,
+  ...soundnessRules,
   ...subgroupRules,
   ...timeRules,
   ...valueRules,
