@@ -18,6 +18,8 @@ export interface Layout {
   readonly standIns: readonly (StandIn | null)[];
   /** Columns whose value at enrolment is a covariate. */
   readonly covariateColumns: readonly number[];
+  /** Columns whose value at enrolment divides the units, in plan order. */
+  readonly subgroupColumns: readonly number[];
   readonly hasTime: boolean;
   readonly hasEventId: boolean;
   /** Distinct conditions of metric parts (m<i>). */
@@ -83,6 +85,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
         ),
       ),
     ],
+    subgroupColumns: plan.subgroups.map((column) => columns.indexOf(column)),
     standIns: columns.map((column) => (plan.numericColumns.includes(column) ? null : standIn(plan, groups, column))),
     hasTime: plan.log.every((source) => source.columns.time !== null),
     hasEventId: plan.log.some((source) => source.columns.eventId !== null),

@@ -99,8 +99,15 @@ export function reasonText(reason: number, layout: Layout): string {
   return isRange ? `out of range: ${column}` : `not a number: ${column}`;
 }
 
+type CountedFacts = Omit<Facts, "soundness" | "subgroups">;
+
 /** What the checks look at. */
-export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs: bigint | null): Promise<Facts> {
+export async function facts(
+  plan: Plan,
+  layout: Layout,
+  engine: Engine,
+  logEndUs: bigint | null,
+): Promise<CountedFacts> {
   const ids = unitLineIds(plan);
   const unknown = ids.indexOf("unknown-variant");
   const enrolled = await engine.query(enrolledByVariant(unknown));

@@ -7,13 +7,15 @@ import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
 import { isFile, neighbours } from "./files.ts";
 import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
+import { levels } from "./levels.ts";
 import { readLists } from "./lists.ts";
-import { logEnd } from "./logEnd.ts";
+import { logEnd, type SourceSpan, spansOf } from "./logEnd.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import { openSession, type Session } from "./session.ts";
+import { soundness } from "./soundness.ts";
 import {
   atEnrolment,
   candidates,
@@ -24,6 +26,7 @@ import {
   enrolmentRange,
   enrolments,
   markDuplicates,
+  name,
   needsEnrollingRow,
   seen,
   timeBins,
@@ -122,22 +125,33 @@ async function stages(
   const [range = {}] = await engine.query(timeRange());
   const firstUs = wholeOrNull(range, "first_us");
   const lastUs = wholeOrNull(range, "last_us");
-  const logEndUs = layout.hasTime ? await endOfLog(layout, engine) : null;
+  const spans = layout.hasTime ? await spansOfLog(layout, engine) : [];
+  const logEndUs = logEnd(spans);
   const key = enrolmentKey(plan, firstUs, lastUs);
   await engine.run(seen(plan, layout, key));
   if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
   await engine.run(enrolments(plan, layout, key, logEndUs));
 
   stage("adding up each unit", 0.75);
+  const subgroups = await levels(plan, layout, engine, dialect);
+  const levelCodes = subgroups.map(({ code }) => code);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
   const firstDay = await firstEnrolmentDay(plan, layout, engine);
-  await engine.run(candidates(plan, layout, days, firstDay, dialect));
+  await engine.run(candidates(plan, layout, days, firstDay, levelCodes, dialect));
   await engine.run(units());
   stage("adding up cells", 0.9);
   const values = await metricValues(plan, layout, engine, dialect);
-  const metrics = await metricCells(plan, values, engine, dialect);
+  const groupings = { day: layout.hasTime ? name("day") : null, levels: subgroups.map((_, s) => name(`k${s}`)) };
+  const { metrics, groups: metricGroups } = await metricCells(plan, values, groupings, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
+  const bySubgroup = subgroups.map((subgroup) => subgroup.found);
+  const sound = await soundness(
+    plan,
+    { layout, key, days, levels: levelCodes, spans, logEndUs, account },
+    found.enrolled,
+    engine,
+  );
   const prints = await fingerprints;
   if (options.rejectsTo !== undefined) {
     await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
@@ -153,8 +167,9 @@ async function stages(
     })),
     lists,
     ...account,
-    facts: found,
+    facts: { ...found, subgroups: bySubgroup, soundness: sound },
     metrics,
+    groups: metricGroups,
   };
   return { reduction, values };
 }
@@ -167,9 +182,9 @@ async function firstEnrolmentDay(plan: Plan, layout: Layout, engine: Engine): Pr
   return firstUs === null ? null : localDay(firstUs, plan.timezone);
 }
 
-async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {
+async function spansOfLog(layout: Layout, engine: Engine): Promise<SourceSpan[]> {
   const bins = await engine.query(timeBins(layout));
-  return logEnd(
+  return spansOf(
     bins.map((row) => ({
       source: count(row, "source"),
       rows: count(row, "rows"),

@@ -3,6 +3,8 @@
  * except the rejected rows, which go to a file.
  */
 
+import type { SoundnessFacts } from "./soundnessTypes.ts";
+
 /** Counts per variant, in plan order. */
 export type ByVariant = readonly number[];
 
@@ -20,6 +22,8 @@ export interface Reduction {
   readonly facts: Facts;
   /** One a metric, in plan order. */
   readonly metrics: readonly MetricCells[];
+  /** The same over other groups of the analysed units than buckets; one a metric, in plan order. */
+  readonly groups: readonly MetricGroups[];
   /** Rejected rows by reason, most frequent first. */
   readonly rejectReasons: readonly { readonly reason: string; readonly rows: number }[];
 }
@@ -56,7 +60,22 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** One a subgroup column of the plan, in plan order. */
+  readonly subgroups: readonly SubgroupColumn[];
+  readonly soundness: SoundnessFacts;
 }
+
+/** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */
+export interface SubgroupColumn {
+  readonly column: string;
+  /** The 12 largest by enrolled units, ties by text; then the rest as one; then the units whose value is missing. */
+  readonly levels: readonly { readonly level: Level; readonly enrolled: ByVariant }[];
+}
+/** A kind and not a text: a log may well have a value "other". */
+export type Level =
+  | { readonly kind: "value"; readonly text: string }
+  | { readonly kind: "rest"; readonly levels: number }
+  | { readonly kind: "missing" };
 export interface ValueCount {
   readonly value: string;
   readonly rows: number;
@@ -86,6 +105,21 @@ export interface MetricCells {
    * score, of several the one with the smallest pair; x is its ratio's denominator or its covariate.
    */
   readonly ends: readonly (UnitEnds | null)[];
+}
+
+/** One metric's cells by what divides the analysed units. Quantiles have none. */
+export interface MetricGroups {
+  readonly metric: string;
+  /** By the local day of enrolment, as days since 1970-01-01; null without time. */
+  readonly byDay: GroupCells | null;
+  /** One a subgroup column of the plan; the group is the place of the level in `Facts.subgroups`. */
+  readonly byLevel: readonly GroupCells[];
+}
+
+/** Cells whose `bucket` is the group; joint sums of a ratio's two parts, or of a value and its covariate. */
+export interface GroupCells {
+  readonly of: CellTable;
+  readonly joint: JointTable | null;
 }
 
 export type OtherCells =

@@ -34,6 +34,7 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
     followUp: plan["follow-up"] ?? null,
     metrics: plan.metrics.map((metric, i) => builtMetric(metric, ["metrics", i], source)),
     filters: plan.filters.map((filter, i) => builtFilter(filter, ["filters", i], source)),
+    subgroups: plan.subgroups,
     decision: {
       confidence: Number(shareText(plan.decision.confidence)),
       power: Number(shareText(plan.decision.power)),

@@ -151,7 +151,7 @@ export const planSchema = z
     subgroups: z
       .array(text("A column of the log."))
       .meta({ description: "Columns whose value at enrolment divides the units." })
-      .optional(),
+      .default([]),
     decision: z
       .strictObject({
         confidence: shareBetween0And1("The confidence of the intervals.").default(0.95),

@@ -19,6 +19,8 @@ export interface Plan {
   readonly followUp: { readonly days: number; readonly incomplete: "exclude" | "keep" } | null;
   readonly metrics: readonly Metric[];
   readonly filters: readonly Filter[];
+  /** Columns whose value on its enrolling row divides the units; in plan order, each once. */
+  readonly subgroups: readonly string[];
   readonly decision: Decision;
   readonly plannedUnits: number | null;
   /** How many units are expected to enrol in a month, all variants together. */

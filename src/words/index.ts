@@ -3,7 +3,7 @@
 export { atLeast, casesText, spanText } from "./cases.ts";
 export { chanceText, pText } from "./chance.ts";
 // nouns and days
-export { type Day, dateSpan, dateText } from "./dates.ts";
+export { type Day, dateSpan, dateText, dayOfEpoch, daysText } from "./dates.ts";
 // estimates with their intervals
 export {
   type Comparative,

@@ -1,9 +1,11 @@
 import { type ColumnTable, op, escape as rowwise } from "arquero";
 import type { Plan } from "../../src/plan/types.ts";
 import { countCopies, rowAt, type SettledRow, settleRows } from "./ledger.ts";
+import { enrolledOf, levelsOf } from "./levels.ts";
 import { byVariant, metricOf } from "./metrics.ts";
 import { ascending } from "./number.ts";
 import { readRows } from "./rows.ts";
+import { soundnessOf } from "./soundness.ts";
 import { logEnd, partsOf } from "./span.ts";
 import { type Clock, clockOf } from "./time.ts";
 import type { Lists, OracleFacts, OracleResult, RawFile, Row } from "./types.ts";
@@ -57,7 +59,7 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       const nameless = id === "not-enrolled" || id === "unknown-variant";
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
-    facts: factsOf(plan, rows, ended, units, end),
+    facts: factsOf(plan, rows, ended, units, end, clock),
     metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
   };
   return { clock, rows, ended, units, result };
@@ -87,16 +89,15 @@ function counts(ended: ColumnTable): Map<string, number> {
   return new Map(lines.map(({ line, rows }) => [line, rows]));
 }
 
-const NOT_ENROLLED = ["not-enrolled", "outside-enrolment", "unknown-variant"];
-
 function factsOf(
   plan: Plan,
   rows: readonly Row[],
   ended: readonly EndedRow[],
   units: readonly Unit[],
   end: bigint | null,
+  clock: Clock,
 ): OracleFacts {
-  const enrolled = units.filter(({ line }) => !NOT_ENROLLED.includes(line));
+  const enrolled = enrolledOf(units);
   const unitsOn = (line: string) => new Set(ended.filter((row) => row.line === line).map(({ unit }) => unit));
   const rejected = unitsOn("rejected");
   const duplicate = unitsOn("duplicate");
@@ -124,6 +125,14 @@ function factsOf(
     firstEnrolledUs: times[0] ?? null,
     lastEnrolledUs: times.at(-1) ?? null,
     logEndUs: end,
+    subgroups: plan.subgroups.map((column) => levelsOf(plan, column, enrolled)),
+    soundness: soundnessOf(
+      plan,
+      ended.map(({ at, line }) => ({ row: rowAt(rows, at), line })),
+      units,
+      end,
+      clock,
+    ),
   };
 }
 

@@ -168,6 +168,25 @@ function factsOf(facts: OracleFacts): Record<string, unknown> {
     firstEnrolledUs: instant(facts.firstEnrolledUs),
     lastEnrolledUs: instant(facts.lastEnrolledUs),
     logEndUs: instant(facts.logEndUs),
+    subgroups: facts.subgroups,
+    soundness: soundnessOutcome(facts.soundness),
+  };
+}
+
+/** Hours without rows are many and say nothing that their number does not. */
+function soundnessOutcome({ enrolling, sources, ...facts }: OracleFacts["soundness"]): Record<string, unknown> {
+  const isTaken = enrolling.taken.flat().some((units) => units > 0);
+  return {
+    ...facts,
+    // Only where a filter took a row that enrols is anything asked of the others.
+    enrolling: isTaken ? enrolling : enrolling.taken,
+    sources: sources.map(({ hours, ...source }) => ({
+      ...source,
+      first: hours[0],
+      last: hours.at(-1),
+      length: hours.length,
+      filled: hours.flatMap((hour, i) => (hour.rows > 0 ? [[i, hour]] : [])),
+    })),
   };
 }
 

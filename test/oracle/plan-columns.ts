@@ -27,6 +27,7 @@ function mentionsIn(node: Node | null, path: readonly string[]): Mention[] {
     const key = String((pair.key as { value?: unknown }).value);
     const value = pair.value as Node | null;
     if (key === "where") return keysOf(value).map((column) => ({ column, numeric: false }));
+    if (key === "subgroups" && path.length === 0) return namesIn(value).map((column) => ({ column, numeric: false }));
     if (!isScalar(value)) return mentionsIn(value, [...path, key]);
     const column = String(value.value);
     const inside = path.at(-1);
@@ -35,6 +36,10 @@ function mentionsIn(node: Node | null, path: readonly string[]): Mention[] {
     if ((inside === "of" || inside === "per") && NUMERIC.includes(key)) return [{ column, numeric: true }];
     return [];
   });
+}
+
+function namesIn(node: Node | null): string[] {
+  return isSeq(node) ? (node.items as Node[]).map((item) => String((item as { value?: unknown }).value)) : [];
 }
 
 function keysOf(node: Node | null): string[] {

@@ -60,6 +60,7 @@ export function planFromYaml(text: string): Plan {
         : { days, incomplete: textAt(at(root, "follow-up"), "incomplete") === "keep" ? "keep" : "exclude" },
     metrics,
     filters,
+    subgroups: list(at(root, "subgroups")).map(plain),
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: numberAt(at(root, "planned"), "units"),
     forecast: null,

@@ -48,6 +48,8 @@ export type OracleFacts = Pick<
   | "firstEnrolledUs"
   | "lastEnrolledUs"
   | "logEndUs"
+  | "subgroups"
+  | "soundness"
 >;
 
 /** One analysed unit's value of a metric, in 10^-9, after the cap. */

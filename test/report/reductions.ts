@@ -1,5 +1,6 @@
 import type { CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
+import { soundnessOf } from "../checks/make.ts";
 
 /** The page reads no cell: contrasts are computed before it. */
 const noCells: CellTable = {
@@ -102,8 +103,11 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       firstEnrolledUs: 1_772_407_300_000_000n, // 2 March 2026, 00:21 in Oslo
       lastEnrolledUs: 1_773_615_500_000_000n, // 15 March 2026, 23:58 in Oslo
       logEndUs: 1_774_220_000_000_000n,
+      subgroups: [],
+      soundness: soundnessOf(plan, enrolled),
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [] })),
     rejectReasons: [
       { reason: "at is not a time", rows: 30 },
       { reason: "fare is not a number", rows: 11 },

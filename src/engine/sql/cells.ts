@@ -32,7 +32,7 @@ export const doubleValue = (x: Statement, scale: number): Measured => ({
 
 /**
  * Reads   units
- * Gives   variant, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
+ * Gives   variant, grouping, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
  */
 export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): Statement {
   // Three nested levels, so that each of u, its powers and their whole parts is computed once a unit.
@@ -49,20 +49,16 @@ export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): St
     sql`min(${name(`x${i}`)}) AS ${name(`least${i}`)}`,
     sql`max(${name(`x${i}`)}) AS ${name(`most${i}`)}`,
   ]);
-  return sql`
-    SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
-    FROM (
-      SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
-    )
-    GROUP BY variant, bucket
-    ORDER BY variant, bucket`;
+  return grouped(over, us, terms, sums);
 }
 
-/** Which of the candidates, and in which groups. */
+/** Which rows of which table, by default of the candidates, and in which groups. */
 export interface Over {
   readonly bucket: Statement;
+  /** Other groupings in the same pass over the units; whole numbers that are never NULL, as the bucket. */
+  readonly others?: readonly Statement[];
   readonly units: Statement;
+  readonly from?: Statement;
 }
 export const EACH_BUCKET: Over = { bucket: sql`bucket`, units: sql`analysed` };
 export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
@@ -108,7 +104,7 @@ export interface Pair {
 /**
  * What the cells of two values lack for their joint sums: the sum of products, and of a partial pair the sums of y over
  * the units that have x.
- * Gives   variant, bucket, and per pair i: n<i>, h<i>_11, l<i>_11; of a partial one h<i>_10, l<i>_10, h<i>_20, l<i>_20, y<i>
+ * Gives   variant, grouping, bucket, and per pair i: n<i>, h<i>_11, l<i>_11; of a partial one h<i>_10, l<i>_10, h<i>_20, l<i>_20, y<i>
  */
 export function jointCells(pairs: readonly Pair[], over: Over = EACH_BUCKET): Statement {
   const us = pairs.flatMap(({ y, x, isPartial }, i) => [
@@ -133,14 +129,36 @@ export function jointCells(pairs: readonly Pair[], over: Over = EACH_BUCKET): St
     ...["11", ...(isPartial ? ["10", "20"] : [])].flatMap((jk) => twoIntegers(name(`t${i}_${jk}`), `${i}_${jk}`)),
     ...(isPartial ? [sql`sum(${name(`y${i}`)}) AS ${name(`y${i}`)}`] : []),
   ]);
+  return grouped(over, us, terms, sums);
+}
+
+/** Sums by variant and bucket, and for every other grouping by variant and its group, which stands as bucket too. */
+function grouped(
+  { bucket, others = [], units, from = sql`candidates` }: Over,
+  us: readonly Statement[],
+  terms: readonly Statement[],
+  sums: readonly Statement[],
+): Statement {
+  const groups = [bucket, ...others].map((group, g) => ({ group, as: name(`g${g}`) }));
+  const columns = groups.map(({ as }) => as);
   return sql`
-    SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
+    SELECT ${list([sql`variant`, ...placeOf(columns), ...sums])}
     FROM (
-      SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
+      SELECT ${list([sql`variant`, ...columns, ...terms])}
+      FROM (SELECT ${list([sql`variant`, ...groups.map(({ group, as }) => sql`${group} AS ${as}`), ...us])} FROM ${from} WHERE ${units})
     )
-    GROUP BY variant, bucket
-    ORDER BY variant, bucket`;
+    GROUP BY GROUPING SETS (${list(columns.map((column) => sql`(variant, ${column})`))})
+    ORDER BY variant, grouping, bucket`;
+}
+
+/** Which grouping a row of sums belongs to, and its group there. */
+function placeOf(columns: readonly Statement[]): Statement[] {
+  const when = (value: (column: Statement, g: number) => Statement) =>
+    join(
+      columns.map((column, g) => sql`WHEN GROUPING(${column}) = 0 THEN ${value(column, g)}`),
+      "\n",
+    );
+  return [sql`CASE ${when((_, g) => sql`${g}`)} END AS grouping`, sql`CASE ${when((column) => column)} END AS bucket`];
 }
 
 /** Sums of the whole part and of the rest of t, as 64-bit terms. */

@@ -7,6 +7,7 @@ import { logRules } from "./log.ts";
 import type { Loose } from "./loose.ts";
 import { metricRules } from "./metrics.ts";
 import { nameRules } from "./names.ts";
+import { subgroupRules } from "./subgroups.ts";
 import { variantRules } from "./variants.ts";
 
 /** All rules about what only several keys together can show; one more is one more line here. */
@@ -17,6 +18,7 @@ const RULES: readonly ((plan: Loose, yaml: YamlText) => readonly Problem[])[] = 
   metricRules,
   exactRules,
   filterRules,
+  subgroupRules,
   nameRules,
 ];
 
