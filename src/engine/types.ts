@@ -58,6 +58,8 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** Analysed units by the local day of their enrolment (days since 1970-01-01), days without one left out; [] without time. */
+  readonly analysedByDay: readonly { readonly day: number; readonly units: ByVariant }[];
   /** One a subgroup column of the plan, in plan order. */
   readonly subgroups: readonly SubgroupColumn[];
 }

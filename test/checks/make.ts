@@ -132,6 +132,7 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       firstEnrolledUs: null,
       lastEnrolledUs: null,
       logEndUs: null,
+      analysedByDay: [],
       subgroups: [],
       ...shape.facts,
     },

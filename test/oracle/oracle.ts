@@ -58,7 +58,7 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       const nameless = id === "not-enrolled" || id === "unknown-variant";
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
-    facts: factsOf(plan, rows, ended, units, end),
+    facts: { ...factsOf(plan, rows, ended, units, end), analysedByDay: byDay(plan, analysed, clock) },
     metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
   };
   return { clock, rows, ended, units, result };
@@ -94,7 +94,7 @@ function factsOf(
   ended: readonly EndedRow[],
   units: readonly Unit[],
   end: bigint | null,
-): OracleFacts {
+): Omit<OracleFacts, "analysedByDay"> {
   const enrolled = enrolledOf(units);
   const unitsOn = (line: string) => new Set(ended.filter((row) => row.line === line).map(({ unit }) => unit));
   const rejected = unitsOn("rejected");
@@ -125,6 +125,19 @@ function factsOf(
     logEndUs: end,
     subgroups: plan.subgroups.map((column) => levelsOf(plan, column, enrolled)),
   };
+}
+
+/** Units by the local day of their enrolment. */
+function byDay(plan: Plan, units: readonly Unit[], clock: Clock): OracleFacts["analysedByDay"] {
+  const dayOf = ({ enrolledUs }: Unit) => (enrolledUs === null ? null : clock.day(enrolledUs));
+  const days = [...new Set(units.map(dayOf))].filter((day) => day !== null).sort((a, b) => a - b);
+  return days.map((day) => ({
+    day,
+    units: countUnits(
+      plan,
+      units.filter((unit) => dayOf(unit) === day),
+    ),
+  }));
 }
 
 function countUnits(plan: Plan, units: readonly Unit[]): number[] {
