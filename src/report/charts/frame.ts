@@ -2,14 +2,17 @@ import type { TopLevelSpec } from "vega-lite";
 import { theme } from "./theme.ts";
 import { roundTicks } from "./ticks.ts";
 
-/** A drawing of figures over an axis: at its own size on a narrow screen, so that its letters stay legible. */
+/** A drawing of figures over two axes; its places are pixels, so that axis and marks cannot disagree. */
 export type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
 
+/** A narrow screen shows it at its own size, so that its letters stay legible. */
 const WIDTH = 340;
-const HEIGHT = 190;
-const LEFT = 58;
-const BELOW = 40;
-const ABOVE = 8;
+const HEIGHT = 240;
+const LEFT = 52;
+const RIGHT = 6;
+const TOP = 8;
+const BOTTOM = 44;
+const TICK = 4;
 const MARGIN = 0.05;
 
 /** A range of values with round numbers to be written at it. */
@@ -27,76 +30,87 @@ export function rangeOf(values: readonly number[], about = 5): Range {
   return { low, high, ticks: roundTicks(low, high, about) };
 }
 
-/** How the two axes are named and written. */
-export interface Axes {
-  readonly x: Range;
-  readonly y: Range;
+/** What the axes are called and how their numbers are written. */
+export interface AxisWords {
   readonly xTitle: string;
   readonly xLabel: (value: number) => string;
   readonly yLabel: (value: number) => string;
 }
 
-/** Layers over both axes, with a line at no difference; marks take their places from `placed`. */
-export function framed(axes: Axes, layers: readonly Layer[]): TopLevelSpec {
+/** Where a value lies on the drawing; what lies beyond the range is held at its edge. */
+export interface Places {
+  readonly x: (value: number) => number;
+  readonly y: (value: number) => number;
+}
+
+export function placesOf(x: Range, y: Range): Places {
+  const share = (value: number, { low, high }: Range) => (Math.min(high, Math.max(low, value)) - low) / (high - low);
+  return {
+    x: (value) => LEFT + share(value, x) * (WIDTH - LEFT - RIGHT),
+    y: (value) => HEIGHT - BOTTOM - share(value, y) * (HEIGHT - TOP - BOTTOM),
+  };
+}
+
+/** Marks over both axes, with a line at no difference where the range reaches it. */
+export function framed(x: Range, y: Range, words: AxisWords, marks: readonly Layer[]): TopLevelSpec {
+  const at = placesOf(x, y);
+  const [left, bottom] = [LEFT, HEIGHT - BOTTOM];
   return {
     $schema: "https://vega.github.io/schema/vega-lite/v6.json",
-    width: WIDTH - LEFT,
+    width: WIDTH,
     height: HEIGHT,
-    padding: { left: LEFT, right: 8, top: ABOVE, bottom: BELOW },
+    padding: 0,
     autosize: "none",
     background: "transparent",
-    data: { values: [{}] },
     config: { aria: false, view: { stroke: null } },
-    layer: [zeroLine(axes), ...layers],
+    layer: [
+      strokes([
+        { x: left, y: TOP, toX: left, toY: bottom },
+        { x: left, y: bottom, toX: WIDTH - RIGHT, toY: bottom },
+        ...y.ticks.map((tick) => ({ x: left - TICK, y: at.y(tick), toX: left, toY: at.y(tick) })),
+        ...x.ticks.map((tick) => ({ x: at.x(tick), y: bottom, toX: at.x(tick), toY: bottom + TICK })),
+        ...(y.low < 0 && y.high > 0 ? [{ x: left, y: at.y(0), toX: WIDTH - RIGHT, toY: at.y(0) }] : []),
+      ]),
+      letters(
+        "right",
+        y.ticks.map((tick) => ({ x: left - TICK - 3, y: at.y(tick) + 4, text: words.yLabel(tick) })),
+      ),
+      letters(
+        "center",
+        x.ticks.map((tick) => ({ x: at.x(tick), y: bottom + TICK + 13, text: words.xLabel(tick) })),
+      ),
+      letters("right", [{ x: WIDTH - RIGHT, y: HEIGHT - 6, text: words.xTitle }]),
+      ...marks,
+    ],
   };
 }
 
-/** The axes belong to the first layer, so that they are drawn once; a range that does not reach 0 has no line. */
-function zeroLine(axes: Axes): Layer {
-  const reachesZero = axes.y.low <= 0 && axes.y.high >= 0;
+/** A field of the data that holds a place. */
+export const pixels = (field: string) => ({ field, type: "quantitative", scale: null, axis: null }) as const;
+
+type Stroke = Readonly<Record<"x" | "y" | "toX" | "toY", number>>;
+
+function strokes(from: readonly Stroke[]): Layer {
   return {
-    mark: { type: "rule", color: theme.line, strokeWidth: 1, opacity: reachesZero ? 1 : 0 },
-    encoding: {
-      y: {
-        datum: reachesZero ? 0 : axes.y.low,
-        type: "quantitative",
-        scale: scaleOf(axes.y),
-        axis: axisOf(axes.y, axes.yLabel, null),
-      },
-      x: {
-        datum: axes.x.low,
-        type: "quantitative",
-        scale: scaleOf(axes.x),
-        axis: axisOf(axes.x, axes.xLabel, axes.xTitle),
-      },
-      x2: { datum: axes.x.high },
+    data: { values: [...from] },
+    mark: { type: "rule", color: theme.line, strokeWidth: 1 },
+    encoding: { x: pixels("x"), y: pixels("y"), x2: { field: "toX" }, y2: { field: "toY" } },
+  };
+}
+
+type Letters = { readonly x: number; readonly y: number; readonly text: string };
+
+function letters(align: "left" | "center" | "right", texts: readonly Letters[]): Layer {
+  return {
+    data: { values: [...texts] },
+    mark: {
+      type: "text",
+      align,
+      baseline: "alphabetic",
+      color: theme.quiet,
+      font: theme.font,
+      fontSize: theme.letters - 1,
     },
-  };
-}
-
-/** A field of the data at its place on one of the axes. */
-export const placed = (field: string, range: Range) =>
-  ({ field, type: "quantitative", scale: scaleOf(range), axis: null }) as const;
-
-const scaleOf = ({ low, high }: Range) => ({ domain: [low, high], nice: false, zero: false });
-
-function axisOf({ ticks }: Range, label: (value: number) => string, title: string | null) {
-  const labels = Object.fromEntries(ticks.map((tick) => [String(tick), label(tick)]));
-  return {
-    values: [...ticks],
-    labelExpr: `${JSON.stringify(labels)}[toString(datum.value)]`,
-    title,
-    titleFont: theme.font,
-    titleFontSize: theme.letters - 1,
-    titleFontWeight: "normal" as const,
-    titleColor: theme.quiet,
-    titlePadding: 6,
-    grid: false,
-    labelFont: theme.font,
-    labelFontSize: theme.letters - 1,
-    labelColor: theme.quiet,
-    labelOverlap: false,
-    domainColor: theme.line,
-    tickColor: theme.line,
+    encoding: { x: pixels("x"), y: pixels("y"), text: { field: "text", type: "nominal" } },
   };
 }

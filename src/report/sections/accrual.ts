@@ -119,16 +119,19 @@ function atTheEnd(effect: Effect, metric: Metric, last: AccrualDay | undefined, 
   return `At the end the interval is ${write(last.low, last.high)}, the band ${write(last.bandLow, last.bandHigh)} (both ${confidence}).`;
 }
 
-/** From which day on the band leaves no difference out, to the end. */
+/** From which day on the band lies on one side of no difference, to the end. */
 function clearFrom(days: readonly AccrualDay[]): string {
-  const isClear = ({ bandLow, bandHigh }: AccrualDay) =>
-    (bandLow !== null && bandLow > 0) || (bandHigh !== null && bandHigh < 0);
-  if (!days.some(isClear)) return "The band holds no difference on every day.";
-  const from = days.findLastIndex((day) => !isClear(day)) + 1;
-  const first = days[from];
-  return first === undefined
-    ? "The band left no difference out on some days, and holds it at the end."
-    : `From ${dayText(first.day)} on the band leaves no difference out.`;
+  const side = ({ bandLow, bandHigh }: AccrualDay) =>
+    bandLow !== null && bandLow > 0 ? "above" : bandHigh !== null && bandHigh < 0 ? "below" : null;
+  const last = days.at(-1);
+  const now = last === undefined ? null : side(last);
+  if (now !== null) {
+    const first = days[days.findLastIndex((day) => side(day) !== now) + 1];
+    return first === undefined ? "" : `From ${dayText(first.day)} on the whole band lies ${now} no difference.`;
+  }
+  return days.some((day) => side(day) !== null)
+    ? "On some days the whole band lay on one side of no difference, at the end it does not."
+    : "No difference lies within the band on every day.";
 }
 
 function notShown(plan: Plan): string {
