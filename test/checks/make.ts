@@ -137,7 +137,7 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       ...shape.facts,
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
-    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [] })),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
     rejectReasons: shape.rejectReasons ?? [],
   };
 }

@@ -106,7 +106,7 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       subgroups: [],
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
-    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [] })),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
     rejectReasons: [
       { reason: "at is not a time", rows: 30 },
       { reason: "fare is not a number", rows: 11 },

@@ -50,7 +50,8 @@ async function partOf(plan: Plan, effect: Effect, accrual: Accrual, id: string):
   const { many } = plan.unitCalled;
   const metric = metricOf(effect, plan);
   const shown = accrual.days;
-  const caption = `${effect.metric}, ${effect.variant} against ${effect.control}: the difference as ${many} enrolled`;
+  const what = scaleText(absolute(effect, metric).scale).replace("Difference", "difference");
+  const caption = `${effect.metric}, ${effect.variant} against ${effect.control}: ${what}, as ${many} enrolled`;
   return {
     id,
     title: `${capital(effect.variant)} against ${effect.control}: as ${many} enrolled`,
