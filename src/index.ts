@@ -5,12 +5,14 @@ import path from "node:path";
 import { type Arm, arms } from "./cells/index.ts";
 import { checks as soundnessChecks } from "./checks/index.ts";
 import {
+  accruals as accrualsOf,
   adjustedPairs,
   effects as allEffects,
   conclusion as concluded,
   contrastFigures,
   otherChoices,
   type Pair,
+  subgroups as subgroupsOf,
   withOrderStatistics,
 } from "./decision/index.ts";
 import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
@@ -121,6 +123,20 @@ function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }
   const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
+  const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
+  const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
-  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, choices, conclusion });
+  return renderReport({
+    plan,
+    planText,
+    planSha256,
+    version,
+    reduction,
+    checks,
+    effects,
+    choices,
+    accruals,
+    subgroups,
+    conclusion,
+  });
 }

@@ -6,6 +6,8 @@ export { bucketNumbers, bucketPairs, bucketSums, withoutX } from "./buckets.ts";
 export { armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "./choice-arms.ts";
 // Exact quotients
 export { exactly, type Fraction, fraction, nearestNumber } from "./fraction.ts";
+// Days and levels
+export { accumulated, type GroupSums, groupArms, groupCovariates, groupSums } from "./group-arms.ts";
 // Adjusted contrasts
 export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
 export { sumsOfSquares } from "./pair-ratio.ts";

@@ -2,6 +2,8 @@
 
 // why a figure does not exist, to follow "since"
 export { because } from "./absent.ts";
+// the effect as units enrolled
+export { type Accrual, type AccrualDay, accruals, UNITS_FOR_ACCRUAL } from "./accrual.ts";
 // what is adjusted for
 export { adjustedSentence, covariateInWords } from "./adjusted-words.ts";
 // what was found, in sentences that page, terminal and summary share
@@ -28,6 +30,9 @@ export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
+// the effect by subgroup
+export { heterogeneitySentence, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
+export { type Subgroup, type SubgroupLevel, subgroups, UNITS_FOR_LEVEL } from "./subgroups.ts";
 // what would change the conclusion
 export { type Turn, whatWouldChange } from "./turning.ts";
 // types

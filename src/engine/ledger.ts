@@ -2,6 +2,7 @@ import type { Plan } from "../plan/index.ts";
 import { count, type Engine, type Row, text, wholeOrNull } from "./engine.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import {
+  analysedByDay,
   analysedRows,
   copyCounts,
   enrolledByVariant,
@@ -117,6 +118,7 @@ export async function facts(
   const [range = {}] = await engine.query(enrolmentRange(ids.length - 1));
   const named = await engine.query(variantCounts());
   const others = await engine.query(otherVariantCounts(VALUES_KEPT));
+  const days = layout.hasTime ? await engine.query(analysedByDay()) : [];
   const events = (await engine.query(eventCounts(VALUES_KEPT))).map((row) => ({
     value: text(row, "value"),
     rows: count(row, "rows"),
@@ -145,6 +147,14 @@ export async function facts(
     firstEnrolledUs: layout.hasTime ? wholeOrNull(range, "first_us") : null,
     lastEnrolledUs: layout.hasTime ? wholeOrNull(range, "last_us") : null,
     logEndUs,
+    analysedByDay: [...new Set(days.map((row) => count(row, "day")))].map((day) => ({
+      day,
+      units: byVariant(
+        plan,
+        days.filter((row) => count(row, "day") === day),
+        "units",
+      ),
+    })),
   };
 }
 const VALUES_KEPT = 200;

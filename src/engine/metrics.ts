@@ -53,7 +53,7 @@ export async function metricCells(
   groupings: Groupings,
   engine: Engine,
   dialect: Dialect,
-): Promise<{ readonly metrics: MetricCells[]; readonly groups: MetricGroups[] }> {
+): Promise<{ readonly metrics: MetricCells[]; readonly groups: Omit<MetricGroups, "sinceEnrolment">[] }> {
   // A covariate counts over the units that have a value too.
   const paired = values.map(({ per, covariate, value }) =>
     covariate === null ? per : sql`CASE WHEN ${value} IS NOT NULL THEN ${covariate} END`,

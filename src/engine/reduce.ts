@@ -15,6 +15,7 @@ import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import { openSession, type Session } from "./session.ts";
+import { sinceEnrolment } from "./sinceEnrolment.ts";
 import { soundness } from "./soundness.ts";
 import {
   atEnrolment,
@@ -137,12 +138,13 @@ async function stages(
   const levelCodes = subgroups.map(({ code }) => code);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
   const firstDay = await firstEnrolmentDay(plan, layout, engine);
-  await engine.run(candidates(plan, layout, days, firstDay, levelCodes, dialect));
+  await engine.run(candidates(plan, layout, days, firstDay, levelCodes, logEndUs, dialect));
   await engine.run(units());
   stage("adding up cells", 0.9);
   const values = await metricValues(plan, layout, engine, dialect);
   const groupings = { day: layout.hasTime ? name("day") : null, levels: subgroups.map((_, s) => name(`k${s}`)) };
-  const { metrics, groups: metricGroups } = await metricCells(plan, values, groupings, engine, dialect);
+  const { metrics, groups: grouped } = await metricCells(plan, values, groupings, engine, dialect);
+  const since = await sinceEnrolment(plan, layout, values, logEndUs, engine, dialect);
   const account = await ledger(plan, layout, engine);
   const found = await facts(plan, layout, engine, logEndUs);
   const bySubgroup = subgroups.map((subgroup) => subgroup.found);
@@ -169,7 +171,7 @@ async function stages(
     ...account,
     facts: { ...found, subgroups: bySubgroup, soundness: sound },
     metrics,
-    groups: metricGroups,
+    groups: grouped.map((group, m) => ({ ...group, sinceEnrolment: since[m] ?? null })),
   };
   return { reduction, values };
 }

@@ -60,6 +60,8 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** Analysed units by the local day of their enrolment (days since 1970-01-01), days without one left out; [] without time. */
+  readonly analysedByDay: readonly { readonly day: number; readonly units: ByVariant }[];
   /** One a subgroup column of the plan, in plan order. */
   readonly subgroups: readonly SubgroupColumn[];
   readonly soundness: SoundnessFacts;
@@ -114,6 +116,21 @@ export interface MetricGroups {
   readonly byDay: GroupCells | null;
   /** One a subgroup column of the plan; the group is the place of the level in `Facts.subgroups`. */
   readonly byLevel: readonly GroupCells[];
+  /** By day since enrolment; null where a metric cannot be told day by day. */
+  readonly sinceEnrolment: SinceEnrolment | null;
+}
+
+/**
+ * A metric by day since enrolment, days of 24 hours, over the analysed units that were followed to the end, of each every
+ * day. A unit's day is the number or the sum of the day's rows, of a proportion and of `days` whether there was one; under
+ * a cap what the day adds to the unit's capped value. All are measured against 0.
+ */
+export interface SinceEnrolment {
+  /** Whole days of follow-up; the group is 0 to days - 1. */
+  readonly days: number;
+  readonly groups: GroupCells;
+  /** Sums of each unit's sum over d of (2 d - (days - 1)) y_d, in one group; null for a ratio. */
+  readonly slope: CellTable | null;
 }
 
 /** Cells whose `bucket` is the group; joint sums of a ratio's two parts, or of a value and its covariate. */

@@ -4,6 +4,7 @@ import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import type { Contrast } from "../stats/types.ts";
 import { twelveDigits } from "./digits.ts";
+import { accrualJson, subgroupJson } from "./groups-json.ts";
 import { rowLine, unitLine } from "./ledger.ts";
 import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
 
@@ -22,8 +23,8 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     flow: flowJson(inputs),
     checks: inputs.checks.map(checkJson),
     effects: inputs.effects.map(effectJson),
-    subgroups: [],
-    accrual: [],
+    subgroups: inputs.subgroups.map((subgroup) => subgroupJson(subgroup, inputs.effects, plan)),
+    accrual: inputs.accruals.map(accrualJson),
     sensitivity: inputs.choices.map(sensitivityJson),
     changes: null,
     provenance: {

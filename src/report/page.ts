@@ -1,4 +1,5 @@
 import { controlOf, whenText } from "./plan-words.ts";
+import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
@@ -7,6 +8,7 @@ import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
+import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
 
@@ -32,6 +34,8 @@ export interface Page {
 /** What stands below a metric's tables. */
 export interface FurtherOnMetric {
   readonly sampling: readonly SamplingPart[];
+  readonly accrual: readonly AccrualPart[];
+  readonly subgroups: readonly SubgroupPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
 }
@@ -50,6 +54,8 @@ export async function page(inputs: ReportInputs): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
+  const accrual = await accrualParts(plan, effects, inputs.accruals, reduction);
+  const subgroups = await subgroupParts(plan, effects, inputs.subgroups);
   const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
@@ -67,6 +73,8 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
       sampling: sampling.get(metric.name) ?? [],
+      accrual: accrual.get(metric.name) ?? [],
+      subgroups: subgroups.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),

@@ -16,6 +16,8 @@ const PARTIALS = [
   "counted",
   "metrics",
   "sampling",
+  "accrual",
+  "subgroups",
   "power",
   "methods",
 ] as const;

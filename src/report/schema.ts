@@ -76,6 +76,47 @@ const effect = z.strictObject({
     .describe("How good the normal approximation is for the contrast that decides."),
 });
 
+const subgroup = z
+  .strictObject({
+    column: z.string(),
+    metric: z.string(),
+    variant: z.string(),
+    levels: z.array(
+      z.strictObject({
+        level: z.string().nullable().describe("The value on the enrolling row; null for rest and missing."),
+        kind: z.enum(["value", "rest", "missing"]),
+        units: count.describe("Of both arms, with a value of the metric."),
+        difference,
+        relative,
+        standing: z.enum(["too-few", "against", "not-against"]),
+        sentence: z.string(),
+      }),
+    ),
+    heterogeneity: z.strictObject({ q: z.number(), df: count, p: tail }).nullable().describe("Cochran's Q."),
+  })
+  .describe("One effect by the levels of a column; low and high pointwise, pAdjusted over all levels.");
+
+const accrual = z
+  .strictObject({
+    metric: z.string(),
+    variant: z.string(),
+    band: z
+      .strictObject({ units: z.number(), planned: z.boolean() })
+      .describe("Where the band is narrowest, and whether that is the plan's number of units."),
+    days: z.array(
+      z.strictObject({
+        day: z.string().describe("Local, YYYY-MM-DD; with all units enrolled up to it."),
+        units: count,
+        estimate: numberOrNull,
+        low: numberOrNull,
+        high: numberOrNull,
+        bandLow: numberOrNull,
+        bandHigh: numberOrNull,
+      }),
+    ),
+  })
+  .describe("The effect as units enrolled: low and high of that day alone, the band on all days at once.");
+
 const check = z
   .object({
     id: z.string(),
@@ -114,8 +155,8 @@ export const reportSchema = z.strictObject({
   }),
   checks: z.array(check),
   effects: z.array(effect),
-  subgroups: z.array(z.never()),
-  accrual: z.array(z.never()),
+  subgroups: z.array(subgroup),
+  accrual: z.array(accrual),
   sensitivity: z
     .array(
       z.strictObject({

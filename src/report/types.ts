@@ -1,6 +1,16 @@
 import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
-import type { ChoiceName, Choices, Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
-import type { Reduction } from "../engine/types.ts";
+import type {
+  Accrual,
+  ChoiceName,
+  Choices,
+  Conclusion,
+  DecisionWord,
+  Effect,
+  Subgroup,
+  SubgroupLevel,
+  Zone,
+} from "../decision/index.ts";
+import type { Level, Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
 
@@ -17,8 +27,8 @@ export interface ReportJson {
   readonly flow: FlowJson;
   readonly checks: readonly CheckJson[];
   readonly effects: readonly EffectJson[];
-  readonly subgroups: readonly never[];
-  readonly accrual: readonly never[];
+  readonly subgroups: readonly SubgroupJson[];
+  readonly accrual: readonly AccrualJson[];
   readonly sensitivity: readonly SensitivityJson[];
   readonly changes: null;
   readonly provenance: ProvenanceJson;
@@ -52,6 +62,45 @@ export type CheckJson = {
   } & { readonly [figure: string]: Figure })[];
 } & { readonly [figure: string]: Figure };
 
+export type DifferenceJson = Difference & { readonly pAdjusted: number | null };
+
+/** One effect by the levels of a column, pointwise. */
+export interface SubgroupJson {
+  readonly column: string;
+  readonly metric: string;
+  readonly variant: string;
+  readonly levels: readonly {
+    /** The value; null for all values beyond the largest twelve (rest) and for units without one (missing). */
+    readonly level: string | null;
+    readonly kind: Level["kind"];
+    /** Of both arms. */
+    readonly units: number;
+    readonly difference: DifferenceJson;
+    readonly relative: Relative | null;
+    readonly standing: SubgroupLevel["standing"];
+    readonly sentence: string;
+  }[];
+  readonly heterogeneity: { readonly q: number; readonly df: number; readonly p: number } | null;
+}
+
+/** One effect as units enrolled, in the metric's unit; a day's row holds all enrolled up to it. */
+export interface AccrualJson {
+  readonly metric: string;
+  readonly variant: string;
+  /** The number of units at which the band is narrowest, and whether it is the plan's. */
+  readonly band: { readonly units: number; readonly planned: boolean };
+  readonly days: readonly {
+    /** Local, YYYY-MM-DD. */
+    readonly day: string;
+    readonly units: number;
+    readonly estimate: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly bandLow: number | null;
+    readonly bandHigh: number | null;
+  }[];
+}
+
 export interface EffectJson {
   readonly metric: string;
   readonly role: Role;
@@ -59,7 +108,7 @@ export interface EffectJson {
   readonly variant: string;
   readonly control: string;
   readonly arms: { readonly control: ArmFigures; readonly variant: ArmFigures };
-  readonly difference: Omit<Difference, "method"> & { readonly pAdjusted: number | null; readonly method: string };
+  readonly difference: DifferenceJson;
   readonly relative: Relative | null;
   /** Where not null, its difference decides. */
   readonly adjusted: {
@@ -132,6 +181,9 @@ export interface ReportInputs {
   readonly effects: readonly Effect[];
   /** One an effect, in their order. */
   readonly choices: readonly Choices[];
+  /** Of every effect that has one, in their order. */
+  readonly accruals: readonly Accrual[];
+  readonly subgroups: readonly Subgroup[];
   readonly conclusion: Conclusion;
 }
 

@@ -9,6 +9,8 @@ export { armOfLevel, shapedAs } from "./arm-of-level.ts";
 export { armsAlike } from "./arms-alike.ts";
 // Covariates
 export { type Balance, balance } from "./balance.ts";
+// Time and subgroups
+export { type BandFor, bandCritical } from "./band.ts";
 // More than one question
 export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
@@ -16,12 +18,13 @@ export type { BootstrapT } from "./bootstrap-t.ts";
 export type { BucketCells } from "./bucket-cells.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
 export { type Alike, contrast, contrastBy } from "./contrast.ts";
-export { type Adjusted, adjusted } from "./covariate.ts";
+export { type Adjusted, type AdjustedBy, adjusted, adjustedPart } from "./covariate.ts";
 export { dunnettCritical, dunnettP } from "./dunnett.ts";
 // Power and sizes
 export { type Exaggeration, exaggeration } from "./exaggeration.ts";
 // Tests of counts
 export { fisher } from "./fisher.ts";
+export { type Heterogeneity, heterogeneity } from "./heterogeneity.ts";
 export type { Histogram } from "./histogram.ts";
 export { holm } from "./holm.ts";
 export { independence } from "./independence.ts";
@@ -54,6 +57,7 @@ export { type Counts, counts } from "./share.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
 export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";
+export { tailLevel } from "./tail-level.ts";
 export { CAUTION_SHARE, type TailLevel, type TailPair, type Tails } from "./tails.ts";
 
 // Types

@@ -134,12 +134,13 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       firstEnrolledUs: null,
       lastEnrolledUs: null,
       logEndUs: null,
+      analysedByDay: [],
       subgroups: [],
       ...shape.facts,
       soundness: { ...soundnessOf(plan, enrolled), ...shape.soundness },
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
-    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [] })),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
     rejectReasons: shape.rejectReasons ?? [],
   };
 }

@@ -59,7 +59,7 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       const nameless = id === "not-enrolled" || id === "unknown-variant";
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
-    facts: factsOf(plan, rows, ended, units, end, clock),
+    facts: { ...factsOf(plan, rows, ended, units, end, clock), analysedByDay: byDay(plan, analysed, clock) },
     metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
   };
   return { clock, rows, ended, units, result };
@@ -96,7 +96,7 @@ function factsOf(
   units: readonly Unit[],
   end: bigint | null,
   clock: Clock,
-): OracleFacts {
+): Omit<OracleFacts, "analysedByDay"> {
   const enrolled = enrolledOf(units);
   const unitsOn = (line: string) => new Set(ended.filter((row) => row.line === line).map(({ unit }) => unit));
   const rejected = unitsOn("rejected");
@@ -134,6 +134,19 @@ function factsOf(
       clock,
     ),
   };
+}
+
+/** Units by the local day of their enrolment. */
+function byDay(plan: Plan, units: readonly Unit[], clock: Clock): OracleFacts["analysedByDay"] {
+  const dayOf = ({ enrolledUs }: Unit) => (enrolledUs === null ? null : clock.day(enrolledUs));
+  const days = [...new Set(units.map(dayOf))].filter((day) => day !== null).sort((a, b) => a - b);
+  return days.map((day) => ({
+    day,
+    units: countUnits(
+      plan,
+      units.filter((unit) => dayOf(unit) === day),
+    ),
+  }));
 }
 
 function countUnits(plan: Plan, units: readonly Unit[]): number[] {

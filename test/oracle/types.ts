@@ -48,6 +48,7 @@ export type OracleFacts = Pick<
   | "firstEnrolledUs"
   | "lastEnrolledUs"
   | "logEndUs"
+  | "analysedByDay"
   | "subgroups"
   | "soundness"
 >;

@@ -52,6 +52,8 @@ function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly fl
     reduction,
     checks: [allocationPassed, ...otherChecks.slice(0, 2), duplicatesCaution, ...otherChecks.slice(2)],
     choices: [],
+    accruals: [],
+    subgroups: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
     effects: withFamilies(plan, effects).map((effect) => withPower(effect, plan, units)),

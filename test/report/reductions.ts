@@ -103,11 +103,12 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       firstEnrolledUs: 1_772_407_300_000_000n, // 2 March 2026, 00:21 in Oslo
       lastEnrolledUs: 1_773_615_500_000_000n, // 15 March 2026, 23:58 in Oslo
       logEndUs: 1_774_220_000_000_000n,
+      analysedByDay: [],
       subgroups: [],
       soundness: soundnessOf(plan, enrolled),
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
-    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [] })),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
     rejectReasons: [
       { reason: "at is not a time", rows: 30 },
       { reason: "fare is not a number", rows: 11 },

@@ -20,6 +20,10 @@ export const analysedRows = (): Statement => sql`
     coalesce(sum(inside_rows), 0) AS inside_rows
   FROM units`;
 
+/** Analysed units by local day of enrolment and variant. */
+export const analysedByDay = (): Statement => sql`
+  SELECT day, variant, count(*) AS units FROM units GROUP BY day, variant ORDER BY day`;
+
 /** Enrolled units (past the line unknown-variant) by first variant, and of them the switched. */
 export const enrolledByVariant = (unknownVariantLine: number): Statement => sql`
   SELECT variant, count(*) AS units, count(*) FILTER (WHERE switched) AS switched
