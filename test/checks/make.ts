@@ -28,6 +28,8 @@ export function planOf(changes: Partial<Plan> = {}): Plan {
     filters: [],
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: null,
+    looks: null,
+    incidents: [],
     forecast: null,
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
     columns: [],

@@ -107,6 +107,8 @@ describe("a plan", () => {
       ],
       decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: 100000,
+      looks: null,
+      incidents: [],
       forecast: null,
       texts: {
         ended: "the planned two weeks were over",
@@ -159,6 +161,8 @@ describe("a plan", () => {
       filters: [],
       decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: null,
+      looks: null,
+      incidents: [],
       forecast: null,
       texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
       columns: ["visitor"],
