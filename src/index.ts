@@ -7,6 +7,7 @@ import { checks as soundnessChecks } from "./checks/index.ts";
 import {
   adjustedPairs,
   effects as allEffects,
+  atThisLook,
   conclusion as concluded,
   contrastFigures,
   otherChoices,
@@ -72,7 +73,7 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const rendered = await decisionReport(plan, planText, found);
+    const rendered = await decisionReport(planText, found);
     options.signal?.throwIfAborted();
     const written = await folder.keep(rendered.files);
     const terminal = rendered.terminal({
@@ -93,6 +94,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
 
 /** All that the report is made from, of constant size. */
 interface Measured {
+  /** With how far the log reaches into its planned looks. */
+  readonly plan: Plan;
   readonly reduction: Reduction;
   /** Per metric, per variant, both in plan order. */
   readonly arms: readonly (readonly Arm[])[];
@@ -101,10 +104,11 @@ interface Measured {
 }
 
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
-async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+async function measured(planned: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+  const plan = atThisLook(planned, reduction);
   const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
   const pairs = await adjustedPairs(plan, reduction, session.adjusted);
-  return { reduction, arms, pairs };
+  return { plan, reduction, arms, pairs };
 }
 
 function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
@@ -116,7 +120,7 @@ function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
 }
 
 /** From counts, cells and arms to the report's files; no file is read or written but the templates. */
-function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
+function decisionReport(planText: string, { plan, reduction, arms, pairs }: Measured): Promise<ReportFiles> {
   const effects = allEffects(plan, arms, reduction, pairs);
   const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);

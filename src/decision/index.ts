@@ -14,6 +14,9 @@ export { type AdjustedCells, adjustedPairs, type Pair } from "./covariates.ts";
 // which contrast the rule is held against
 export { deciding } from "./deciding.ts";
 export { controlOf, effects } from "./effects.ts";
+// planned looks
+export { atThisLook } from "./looks.ts";
+export { lookSentences } from "./looks-words.ts";
 // which interval of an effect a reader sees, and what the plan asks in words
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
 export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
@@ -25,7 +28,7 @@ export { otherIntervalSentence } from "./normality-words.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";
-export { analysedUnits, questionOf } from "./power.ts";
+export { analysedUnits, questionOf, questionOfNextTest } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
 // what would change the conclusion

@@ -27,6 +27,8 @@ export { holm } from "./holm.ts";
 export { independence } from "./independence.ts";
 export type { LargestShare } from "./largest-share.ts";
 export { level } from "./level.ts";
+// Planned looks
+export { type Looks, lookBoundaries, lookCritical, pOfLooks } from "./looks.ts";
 // Moments
 export { type Moments, moments } from "./moments.ts";
 export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";

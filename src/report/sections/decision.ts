@@ -5,6 +5,7 @@ import {
   type Effect,
   effectSentence,
   guardrailSentence,
+  lookSentences,
   nextSentences,
   otherIntervalSentence,
 } from "../../decision/index.ts";
@@ -36,7 +37,7 @@ export async function decisionSection(inputs: ReportInputs): Promise<DecisionSec
   const undecidable = conclusion.decision === "undecidable";
   return {
     sentence: conclusion.sentence,
-    paragraphs: findings(inputs),
+    paragraphs: [...findings(inputs), ...lookSentences(plan, conclusion)],
     forest: undecidable || effects.length === 0 ? null : await forestTable(effects, plan),
     afterForest: nextSentences(plan, effects, conclusion, inputs.reduction),
     reasons: plan.variants.length > 2 && !undecidable ? conclusion.reasons : [],
