@@ -49,7 +49,7 @@ describe("the boundaries of planned looks", () => {
         expect(
           Math.abs(tailOf(null, 1, found[k] ?? 0) - tailOf(null, 1, Number(text))),
           `${found[k]} against ${text}`,
-        ).toBeLessThan(5e-9);
+        ).toBeLessThan(1e-8);
     },
   );
 
