@@ -94,7 +94,8 @@ export type OtherCells =
   | "cap-0.999"
   | "other-way-in-two-variants"
   | "any-follow-up"
-  | "without-first-day";
+  | "without-first-day"
+  | `without-incident:${string}`;
 
 /**
  * A metric under one other choice, one row an arm; log(1 + x) are doubles without an exact total. Smallest and largest are
