@@ -14,6 +14,9 @@ export { type AdjustedCells, adjustedPairs, type Pair } from "./covariates.ts";
 // which contrast the rule is held against
 export { deciding } from "./deciding.ts";
 export { controlOf, effects } from "./effects.ts";
+// incidents
+export { incidentSentences, incidentsInShort } from "./incident-words.ts";
+export { type IncidentOutcome, incidentOutcomes } from "./incidents.ts";
 // planned looks
 export { atThisLook } from "./looks.ts";
 export { lookSentences } from "./looks-words.ts";

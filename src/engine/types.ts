@@ -56,6 +56,8 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** Analysed units that enrolled in each incident of the plan, in its order. */
+  readonly inIncidents: readonly ByVariant[];
 }
 export interface ValueCount {
   readonly value: string;

@@ -132,6 +132,7 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       missingVariants: [],
       firstEnrolledUs: null,
       lastEnrolledUs: null,
+      inIncidents: plan.incidents.map(() => plan.variants.map(() => 0)),
       logEndUs: null,
       ...shape.facts,
     },

@@ -3,7 +3,7 @@ import { nanoText } from "./number.ts";
 import { trace } from "./oracle.ts";
 import { clockOf } from "./time.ts";
 import type { Lists, OracleMetric, RawFile } from "./types.ts";
-import { holds } from "./where.ts";
+import { isIn } from "./units.ts";
 
 /**
  * METHODS 6 read as what it says: the same log under a plan that makes another choice. Each choice is the whole oracle,
@@ -92,18 +92,7 @@ function withoutIncident(
   const incident = plan.incidents.find(({ name }) => choice === `without-incident:${name}`);
   if (incident === undefined) return null;
   const { result, units } = trace(plan, files, lists);
-  const struck = new Set(
-    units
-      .filter(
-        ({ enrolling, enrolledUs }) =>
-          enrolling !== null &&
-          enrolledUs !== null &&
-          enrolledUs >= incident.fromUs &&
-          enrolledUs < incident.beforeUs &&
-          holds(incident.where, enrolling.cell),
-      )
-      .map(({ unit }) => unit),
-  );
+  const struck = new Set(units.filter((unit) => isIn(incident, unit)).map(({ unit }) => unit));
   return result.metrics.map((metric) => ({
     ...metric,
     values: metric.values.filter(({ unit }) => !struck.has(unit)),

@@ -168,6 +168,7 @@ function factsOf(facts: OracleFacts): Record<string, unknown> {
     firstEnrolledUs: instant(facts.firstEnrolledUs),
     lastEnrolledUs: instant(facts.lastEnrolledUs),
     logEndUs: instant(facts.logEndUs),
+    inIncidents: facts.inIncidents,
   };
 }
 
