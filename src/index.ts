@@ -12,15 +12,19 @@ import {
   contrastFigures,
   otherChoices,
   type Pair,
+  type SizeAnswer,
+  type SizeQuestion,
+  sizeAhead,
   withOrderStatistics,
 } from "./decision/index.ts";
 import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
+import { sizeText } from "./report/size.ts";
 import { version } from "./version.ts";
 
-export type { Progress, ReportJson };
+export type { Progress, ReportJson, SizeAnswer, SizeQuestion };
 export { planJsonSchema, reportJsonSchema, version };
 
 export interface CloseoutOptions {
@@ -43,6 +47,14 @@ export type Outcome =
       readonly files: readonly string[];
     }
   | { readonly status: 2 | 3; readonly text: string };
+
+/** The size of a test to come, with its text for a terminal; or what is wrong with the question. */
+export function size(
+  question: SizeQuestion,
+): (SizeAnswer & { readonly text: string }) | { readonly problems: readonly string[] } {
+  const answer = sizeAhead(question);
+  return "problems" in answer ? answer : { ...answer, text: sizeText(question, answer) };
+}
 
 /**
  * Reads a plan and its log, and writes the report's files.

@@ -34,6 +34,8 @@ export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf, questionOfNextTest } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
+// the size of a test to come, without any data
+export { levelAt, type SizeAnswer, type SizeQuestion, sizeAhead } from "./size-ahead.ts";
 // what would change the conclusion
 export { type Turn, whatWouldChange } from "./turning.ts";
 // types
