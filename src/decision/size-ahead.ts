@@ -49,8 +49,7 @@ export interface SizeAnswer {
 const MOST_UNITS = 1e12;
 
 /**
- * The size of a test to come: units of each variant, and days of enrolment. With planned looks it is judged by their last
- * boundary, so its power is at least the one asked for.
+ * The size of a test to come: units of each variant, and days of enrolment; with planned looks up to the last of them.
  * @returns what is wrong with the question, in sentences to print
  */
 export function sizeAhead(question: SizeQuestion): SizeAnswer | { readonly problems: readonly string[] } {

@@ -45,7 +45,7 @@ function levelText({ level }: SizeQuestion, value: number): string {
 
 function variantsText({ allocation }: SizeQuestion): string {
   const variants = allocation.length - 1;
-  return variants === 1 ? "" : ` that hold for all ${variants} variants at once`;
+  return variants === 1 ? "" : ` that hold for ${variants === 2 ? "both" : `all ${variants}`} variants at once`;
 }
 
 /** "47,222 units in each variant" counts the control too; unequal ones are named one by one. */

@@ -33,6 +33,22 @@ export function tailOf(before: Paths | null, t: number, c: number): number {
   );
 }
 
+/**
+ * P(Z_k >= c and no boundary reached before) where there is a difference: Z_k then has the mean drift sqrt(t_k).
+ *
+ * Z_j is sufficient, so a path that stands at z has exp(drift sqrt(t_j) z - drift^2 t_j / 2) times the chance that it has
+ * without a difference, and the paths themselves need no second integral.
+ * @param drift the mean of Z at the share 1
+ */
+export function tailWith(drift: number, before: Paths | null, t: number, c: number): number {
+  if (before === null) return normalUpperTail(c - drift * Math.sqrt(t));
+  const step = stepOf(before, t);
+  const ahead = drift * Math.sqrt(t - before.t);
+  const slope = drift * Math.sqrt(before.t);
+  const fromPath = (z: number) => Math.exp(slope * z - slope ** 2 / 2) * normalUpperTail(step(c, z) - ahead);
+  return before.points.reduce((sum, { z, mass }) => sum + mass * (fromPath(z) + fromPath(-z)), 0);
+}
+
 /** The paths that look k leaves: those below its boundary. @param next the share of the look after, which sets the grid */
 export function pathsBelow(before: Paths | null, t: number, boundary: number, next: number): Paths {
   const widthOf = (from: number, to: number, of: number) => Math.sqrt((to - from) / of);

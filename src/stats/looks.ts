@@ -1,5 +1,6 @@
-import { type Paths, pathsBelow, tailOf } from "./look-paths.ts";
+import { type Paths, pathsBelow, tailOf, tailWith } from "./look-paths.ts";
 import { normalCritical, normalTwoSided } from "./normal.ts";
+import { normalQuantile } from "./normal-quantile.ts";
 import { root } from "./root.ts";
 import { type Spending, spentASide } from "./spending.ts";
 
@@ -24,19 +25,29 @@ export interface Looks {
  * Source: Lan and DeMets 1983, Biometrika 70, 659-663; Jennison and Turnbull 1989, JRSS B 51, 305-361; both in Jennison
  * and Turnbull 2000, ch. 7 and 9.
  */
-export function lookBoundaries({ shares, spending, isLast }: Looks, alpha: number): number[] {
-  const boundaries: number[] = [];
-  let paths: Paths | null = null;
+export function lookBoundaries(looks: Looks, alpha: number): number[] {
+  return boundariesWithPaths(looks, alpha).map(({ boundary }) => boundary);
+}
+
+interface Stage {
+  readonly t: number;
+  readonly boundary: number;
+  readonly before: Paths | null;
+}
+
+function boundariesWithPaths({ shares, spending, isLast }: Looks, alpha: number): Stage[] {
+  const stages: Stage[] = [];
+  let before: Paths | null = null;
   let spent = 0;
   for (const [k, t] of shares.entries()) {
     const allowed = isLast && k === shares.length - 1 ? alpha / 2 : spentASide(spending, alpha, Math.min(t, 1));
-    const boundary = boundaryOf(paths, t, allowed - spent);
-    boundaries.push(boundary);
+    const boundary = boundaryOf(before, t, allowed - spent);
+    stages.push({ t, boundary, before });
     const next = shares[k + 1];
-    if (next !== undefined) paths = pathsBelow(paths, t, boundary, next);
+    if (next !== undefined) before = pathsBelow(before, t, boundary, next);
     spent = allowed;
   }
-  return boundaries;
+  return stages;
 }
 
 /** The critical value of this look. */
@@ -60,6 +71,23 @@ export function pOfLooks(looks: Looks, p: number): number {
   const [low, high] = [Math.log(p), Math.log(LARGEST_P)];
   if (over(low) <= 0) return p;
   return over(high) >= 0 ? 1 : Math.exp(root(over, low, high));
+}
+
+/**
+ * How many standard errors, those of the whole size, a true effect must measure for one of the looks to show it with this
+ * power: what z(1 - alpha/2) + z(power) is for a single look. Only the boundary on the effect's side counts.
+ * @param power in (0, 1)
+ *
+ * Source: Jennison and Turnbull 2000, 2.2 and 7.2: the maximum size over that of a single look is the square of the ratio.
+ */
+export function driftOfLooks(looks: Looks, alpha: number, power: number): number {
+  const stages = boundariesWithPaths(looks, alpha);
+  const last = stages.at(-1)?.boundary ?? 0;
+  const found = (drift: number) =>
+    stages.reduce((sum, { before, t, boundary }) => sum + tailWith(drift, before, t, boundary), 0);
+  const end = stages.at(-1)?.t ?? 1;
+  // The last look alone has the power at the upper end; all looks together have it earlier.
+  return root((drift) => found(drift) - power, 0, (last + Math.max(normalQuantile(power), 0) + 1) / Math.sqrt(end));
 }
 
 /** From here on p is 1: no test is planned at such an alpha. */

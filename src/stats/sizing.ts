@@ -1,4 +1,4 @@
-import { type Looks, lookCritical } from "./looks.ts";
+import { driftOfLooks, type Looks, lookCritical } from "./looks.ts";
 import { detectable } from "./power.ts";
 import { criticalOfSimultaneous } from "./simultaneous.ts";
 
@@ -30,8 +30,8 @@ export interface Sizing {
  *
  *   N = max over variants i of ((c + z(power)) / distance)^2 (s_c^2 / a_c + s_i^2 / a_i),   a the shares of units
  * rounded up in each arm. Normal throughout, as the analysis of large arms is; under 200 units an arm Welch's t asks for
- * about one unit more in each. With planned looks it is the size at which the last alone has the power, so that all have
- * at least that.
+ * about one unit more in each. With planned looks the standard errors that one of them shows with this power take the place
+ * of c + z(power) (`driftOfLooks`): the whole size, which only a test that goes to its last look needs.
  *
  * Source: Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 2nd ed., 3.2.1 (means) and 4.2.1
  * (proportions, unpooled).
@@ -42,13 +42,10 @@ export function sizing({ variances, allocation, distance, alpha, power, looks }:
   const whole = allocation.reduce((sum, share) => sum + share, 0);
   const shares = allocation.map((share) => share / whole);
   const [control = 0, ...variants] = variances.map((variance, arm) => variance / (shares[arm] ?? 0));
-  const critical =
-    looks === undefined
-      ? criticalOfSimultaneous(control, variants, alpha)
-      : lookCritical(looks, alpha / variants.length);
-  const needed = Math.max(
-    ...variants.map((variant) => (detectable(critical, power, Math.sqrt(control + variant)) / distance) ** 2),
-  );
+  const own = alpha / variants.length;
+  const critical = looks === undefined ? criticalOfSimultaneous(control, variants, alpha) : lookCritical(looks, own);
+  const errors = looks === undefined ? detectable(critical, power, 1) : driftOfLooks(looks, own, power);
+  const needed = Math.max(...variants.map((variant) => (errors / distance) ** 2 * (control + variant)));
   const units = shares.map((share) => Math.ceil(needed * share));
   return { critical, units, total: units.reduce((sum, n) => sum + n, 0) };
 }

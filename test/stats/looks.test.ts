@@ -1,7 +1,15 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { type Looks, lookBoundaries, lookCritical, normalCritical, pOfLooks } from "../../src/stats/index.ts";
-import { type Paths, pathsBelow, tailOf } from "../../src/stats/look-paths.ts";
+import {
+  driftOfLooks,
+  type Looks,
+  lookBoundaries,
+  lookCritical,
+  normalCritical,
+  normalQuantile,
+  pOfLooks,
+} from "../../src/stats/index.ts";
+import { type Paths, pathsBelow, tailOf, tailWith } from "../../src/stats/look-paths.ts";
 import { spentASide } from "../../src/stats/spending.ts";
 import { expectPrinted, expectWithin } from "./expect.ts";
 import { lookBoundariesElsewhere } from "./reference.ts";
@@ -16,6 +24,18 @@ function crossing(shares: readonly number[], boundaries: readonly number[]): num
   for (const [k, t] of shares.entries()) {
     const boundary = boundaries[k] ?? 0;
     sum += 2 * tailOf(paths, t, boundary);
+    paths = pathsBelow(paths, t, boundary, shares[k + 1] ?? t + 1);
+  }
+  return sum;
+}
+
+/** The chance to reach the upper boundary at any look, where Z has the mean `drift` at the share 1. */
+function shown(drift: number, shares: readonly number[], boundaries: readonly number[]): number {
+  let paths: Paths | null = null;
+  let sum = 0;
+  for (const [k, t] of shares.entries()) {
+    const boundary = boundaries[k] ?? 0;
+    sum += tailWith(drift, paths, t, boundary);
     paths = pathsBelow(paths, t, boundary, shares[k + 1] ?? t + 1);
   }
   return sum;
@@ -173,5 +193,45 @@ describe("p adjusted for the looks", () => {
     expect(pOfLooks(looks, 0)).toBe(0);
     expect(pOfLooks(looks, 1)).toBe(1);
     expect(pOfLooks(looks, 0.9999)).toBe(1);
+  });
+});
+
+describe("what planned looks cost", () => {
+  // rpact 3.3.4: getDesignCharacteristics(getDesignGroupSequential(kMax = k, alpha = 0.05, beta = 1 - p, sided = 2,
+  // typeOfDesign = "asOF" or "asP", tolerance = 1e-10))$shift, the square of the drift
+  it.each([
+    ["obrien-fleming", 2, 0.8, "7.87811701"],
+    ["obrien-fleming", 2, 0.9, "10.5433367"],
+    ["obrien-fleming", 5, 0.8, "8.04290308"],
+    ["obrien-fleming", 5, 0.9, "10.7499168"],
+    ["pocock", 2, 0.8, "8.8107617"],
+    ["pocock", 2, 0.9, "11.6742365"],
+    ["pocock", 5, 0.8, "9.51775521"],
+    ["pocock", 5, 0.9, "12.5285012"],
+  ] as const)("is rpact's, for %s, %i looks and a power of %f", (spending, looks, power, shift) => {
+    expectWithin(driftOfLooks(ALL(evenly(looks), spending), 0.05, power) ** 2, shift, 1e-8);
+  });
+
+  // Jennison and Turnbull 2000, R_B (table 2.8), R_P and R_WT: the size over that of a single look, 5% two-sided, as in
+  // gsDesign's tests/testthat/test-outputs.R; the constants there or in the tables above.
+  it.each([
+    ["O'Brien and Fleming", 5, 2.040073175, -0.5, 0.8, "1.028"],
+    ["Pocock", 4, 2.361298, 0, 0.8, "1.202"],
+    ["Wang and Tsiatis", 9, 2.113, -0.4, 0.9, "1.048"],
+    ["Wang and Tsiatis", 6, 2.154, -0.25, 0.8, "1.077"],
+    ["Wang and Tsiatis", 7, 2.313, -0.1, 0.8, "1.159"],
+  ])("is the published inflation of %s: %i looks", (_, looks, constant, exponent, power, printed) => {
+    const [shares, single] = [evenly(looks), normalCritical(0.05) + normalQuantile(power)];
+    const boundaries = shares.map((t) => constant * t ** exponent);
+    const chance = (inflation: number) => shown(single * Math.sqrt(inflation), shares, boundaries);
+    expect(chance(Number(printed) - 0.0005)).toBeLessThanOrEqual(power);
+    expect(chance(Number(printed) + 0.0006)).toBeGreaterThanOrEqual(power); // constants with three places move it by 0.0001
+  });
+
+  it("is nothing for a single look, and grows with the looks", () => {
+    const single = normalCritical(0.05) + normalQuantile(0.8);
+    expectWithin(driftOfLooks(ALL([1], "pocock"), 0.05, 0.8), single, 1e-9);
+    const drifts = [1, 2, 3, 6, 10].map((looks) => driftOfLooks(ALL(evenly(looks), "pocock"), 0.05, 0.8));
+    expect(drifts).toEqual([...drifts].sort((a, b) => a - b));
   });
 });
