@@ -8,10 +8,14 @@ import {
   accruals as accrualsOf,
   adjustedPairs,
   effects as allEffects,
+  atThisLook,
   conclusion as concluded,
   contrastFigures,
   otherChoices,
   type Pair,
+  type SizeAnswer,
+  type SizeQuestion,
+  sizeAhead,
   subgroups as subgroupsOf,
   withOrderStatistics,
 } from "./decision/index.ts";
@@ -19,9 +23,10 @@ import { type Progress, type Reduction, type Session, UnusableLog, withReduction
 import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
+import { sizeText } from "./report/size.ts";
 import { version } from "./version.ts";
 
-export type { Progress, ReportJson };
+export type { Progress, ReportJson, SizeAnswer, SizeQuestion };
 export { planJsonSchema, reportJsonSchema, version };
 
 export interface CloseoutOptions {
@@ -44,6 +49,14 @@ export type Outcome =
       readonly files: readonly string[];
     }
   | { readonly status: 2 | 3; readonly text: string };
+
+/** The size of a test to come, with its text for a terminal; or what is wrong with the question. */
+export function size(
+  question: SizeQuestion,
+): (SizeAnswer & { readonly text: string }) | { readonly problems: readonly string[] } {
+  const answer = sizeAhead(question);
+  return "problems" in answer ? answer : { ...answer, text: sizeText(question, answer) };
+}
 
 /**
  * Reads a plan and its log, and writes the report's files.
@@ -74,7 +87,7 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const rendered = await decisionReport(plan, planText, found);
+    const rendered = await decisionReport(planText, found);
     options.signal?.throwIfAborted();
     const written = await folder.keep(rendered.files);
     const terminal = rendered.terminal({
@@ -95,6 +108,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
 
 /** All that the report is made from, of constant size. */
 interface Measured {
+  /** With how far the log reaches into its planned looks. */
+  readonly plan: Plan;
   readonly reduction: Reduction;
   /** Per metric, per variant, both in plan order. */
   readonly arms: readonly (readonly Arm[])[];
@@ -103,10 +118,11 @@ interface Measured {
 }
 
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
-async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+async function measured(planned: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+  const plan = atThisLook(planned, reduction);
   const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
   const pairs = await adjustedPairs(plan, reduction, session.adjusted);
-  return { reduction, arms, pairs };
+  return { plan, reduction, arms, pairs };
 }
 
 function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
@@ -118,7 +134,7 @@ function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
 }
 
 /** From counts, cells and arms to the report's files; no file is read or written but the templates. */
-function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
+function decisionReport(planText: string, { plan, reduction, arms, pairs }: Measured): Promise<ReportFiles> {
   const effects = allEffects(plan, arms, reduction, pairs);
   const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);

@@ -4,6 +4,7 @@ import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
 import { report } from "./report.ts";
 import { schema } from "./schema.ts";
+import { addSize } from "./size.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 import { unwritableText } from "./unwritable.ts";
 import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
@@ -87,6 +88,8 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .usage("[DIR] [options]")
     .option("--debug", "on a fault of closeout itself, print where it happened")
     .action(async (folder: string) => end(await demo(folder, terminal, await load(), signal)));
+
+  addSize(program, () => facts(program, "size"), terminal, load, end);
 
   program
     .command("schema")

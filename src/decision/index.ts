@@ -16,6 +16,12 @@ export { type AdjustedCells, adjustedPairs, type Pair } from "./covariates.ts";
 // which contrast the rule is held against
 export { deciding } from "./deciding.ts";
 export { controlOf, effects } from "./effects.ts";
+// incidents
+export { incidentSentences, incidentsInShort } from "./incident-words.ts";
+export { type IncidentOutcome, incidentOutcomes } from "./incidents.ts";
+// planned looks
+export { atThisLook } from "./looks.ts";
+export { lookSentences } from "./looks-words.ts";
 // which interval of an effect a reader sees, and what the plan asks in words
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
 export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
@@ -27,9 +33,11 @@ export { otherIntervalSentence } from "./normality-words.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";
-export { analysedUnits, questionOf } from "./power.ts";
+export { analysedUnits, questionOf, questionOfNextTest } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
+// the size of a test to come, without any data
+export { levelAt, type SizeAnswer, type SizeQuestion, sizeAhead } from "./size-ahead.ts";
 // the effect by subgroup
 export { heterogeneitySentence, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
 export { type Subgroup, type SubgroupLevel, subgroups, UNITS_FOR_LEVEL } from "./subgroups.ts";

@@ -15,6 +15,7 @@ import {
   rowsByFile,
   rowsByReason,
   unitsByLine,
+  unitsInIncidents,
   unitsWithFate,
   valueList,
   variantCounts,
@@ -155,9 +156,16 @@ export async function facts(
         "units",
       ),
     })),
+    inIncidents: await inIncidents(plan, engine),
   };
 }
 const VALUES_KEPT = 200;
+
+async function inIncidents(plan: Plan, engine: Engine): Promise<ByVariant[]> {
+  if (plan.incidents.length === 0) return [];
+  const rows = await engine.query(unitsInIncidents(plan.incidents.length));
+  return plan.incidents.map((_, k) => byVariant(plan, rows, `units${k}`));
+}
 
 async function missingEvents(plan: Plan, commonest: readonly ValueCount[], engine: Engine): Promise<string[]> {
   const parts = plan.metrics.flatMap((metric) => [metric.of, ...(metric.per === null ? [] : [metric.per])]);

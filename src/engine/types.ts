@@ -65,6 +65,8 @@ export interface Facts {
   /** One a subgroup column of the plan, in plan order. */
   readonly subgroups: readonly SubgroupColumn[];
   readonly soundness: SoundnessFacts;
+  /** Analysed units that enrolled in each incident of the plan, in its order. */
+  readonly inIncidents: readonly ByVariant[];
 }
 
 /** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */
@@ -145,7 +147,8 @@ export type OtherCells =
   | "cap-0.999"
   | "other-way-in-two-variants"
   | "any-follow-up"
-  | "without-first-day";
+  | "without-first-day"
+  | `without-incident:${string}`;
 
 /**
  * A metric under one other choice, one row an arm; log(1 + x) are doubles without an exact total. Smallest and largest are

@@ -43,6 +43,24 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
       interval: plan.decision.interval,
     },
     plannedUnits: plan.planned?.units ?? null,
+    looks:
+      plan.looks === undefined
+        ? null
+        : {
+            planned: plan.looks.planned.map((share) => Number(shareText(share))),
+            at: plan.looks.at,
+            spending: plan.looks.spending,
+            reached: null,
+          },
+    incidents: plan.incidents.map(({ name, what, from, before, where }, i) => ({
+      name,
+      what: what ?? null,
+      fromUs: known(parseTime(from, timezone), "time"),
+      beforeUs: known(parseTime(before, timezone), "time"),
+      fromText: from,
+      beforeText: before,
+      where: whereTests(where, ["incidents", i, "where"], source.yaml),
+    })),
     forecast: plan.forecast === undefined ? null : { unitsPerMonth: plan.forecast["units-per-month"] },
     texts: {
       ended: plan.ended ?? null,

@@ -4,6 +4,7 @@ import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
+import { type IncidentText, incidentTexts } from "./sections/incidents.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
@@ -25,6 +26,8 @@ export interface Page {
   readonly contents: readonly { readonly number: number; readonly id: string; readonly title: string }[];
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
+  /** The end of section 3. */
+  readonly incidents: readonly IncidentText[];
   readonly counted: CountedSection;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly power: PowerSection;
@@ -69,6 +72,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     contents: CONTENTS,
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
+    incidents: incidentTexts(inputs),
     counted: countedSection(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,

@@ -14,6 +14,7 @@ const PARTIALS = [
   "contents",
   "checks",
   "counted",
+  "incidents",
   "metrics",
   "sampling",
   "accrual",

@@ -1,4 +1,4 @@
-import { nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
+import { lookSentences, nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
 import { whenText } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
 import type { ReportInputs } from "./types.ts";
@@ -28,7 +28,11 @@ function sentences(inputs: ReportInputs): string[] {
     conclusion.decision === "not-settled"
       ? [whyNotSettled(plan, reduction), untilThen(plan)]
       : nextSentences(plan, effects, conclusion, reduction).slice(0, 2);
-  return [...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND), ...then];
+  return [
+    ...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND),
+    ...lookSentences(plan, conclusion),
+    ...then,
+  ];
 }
 
 /** Text from the plan as text: nothing in it may turn into markup where the summary is pasted. */

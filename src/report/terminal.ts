@@ -1,4 +1,4 @@
-import { covariateInWords, type Effect } from "../decision/index.ts";
+import { covariateInWords, type Effect, lookSentences } from "../decision/index.ts";
 import type { Plan } from "../plan/types.ts";
 import { count, list, planPercent, plural } from "../words/index.ts";
 import { effectText, verdictText } from "./effect-text.ts";
@@ -21,7 +21,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
     ...wrapped(plan.experiment),
     "",
     ...wrapped(conclusion.sentence),
-    ...findings(inputs).flatMap((sentence) => wrapped(sentence)),
+    ...[...findings(inputs), ...lookSentences(plan, conclusion)].flatMap((sentence) => wrapped(sentence)),
     "",
     ...table,
     ...(table.length === 0 || adjusted === "" ? [] : labelled("Adjusted", adjusted)),

@@ -9,7 +9,7 @@ import type { Library } from "../../src/cli/library.ts";
 import { run } from "../../src/cli/program.ts";
 import { progressText } from "../../src/cli/progress.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
-import type { CloseoutOptions, Outcome, ReportJson } from "../../src/index.ts";
+import { type CloseoutOptions, type Outcome, type ReportJson, size } from "../../src/index.ts";
 
 const DONE: Outcome = {
   status: 0,
@@ -39,6 +39,7 @@ async function command(argv: string[], outcome: Outcome | Error = DONE, signal =
     },
     planJsonSchema: () => ({ title: "plan" }),
     reportJsonSchema: () => ({ title: "report" }),
+    size,
   };
   const status = await run(argv, { terminal, load: async () => library, signal, version: "1.2.3" });
   return { status, stdout: stdout.join("\n"), stderr: stderr.join("\n"), asked };
@@ -136,7 +137,13 @@ describe("what is asked for", () => {
     const { status, stdout, stderr } = await command(["--help"]);
     expect([status, stderr]).toEqual([0, ""]);
     const [, commands = ""] = /Commands:\n([\s\S]*?)\n\n/.exec(stdout) ?? [];
-    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
+    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual([
+      "report",
+      "demo",
+      "size",
+      "schema",
+      "help",
+    ]);
   });
 
   it("prints the help of a command", async () => {

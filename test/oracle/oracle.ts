@@ -9,7 +9,7 @@ import { soundnessOf } from "./soundness.ts";
 import { logEnd, partsOf } from "./span.ts";
 import { type Clock, clockOf } from "./time.ts";
 import type { Lists, OracleFacts, OracleResult, RawFile, Row } from "./types.ts";
-import { followUpEnd, rowLineIds, seeUnits, type Unit, unitLineIds } from "./units.ts";
+import { followUpEnd, isIn, rowLineIds, seeUnits, type Unit, unitLineIds } from "./units.ts";
 
 /** A row that has ended: on which line, and of what place in canonical order. */
 export interface EndedRow {
@@ -132,6 +132,12 @@ function factsOf(
       units,
       end,
       clock,
+    ),
+    inIncidents: plan.incidents.map((incident) =>
+      countUnits(
+        plan,
+        units.filter((unit) => unit.line === "analysed" && isIn(incident, unit)),
+      ),
     ),
   };
 }

@@ -170,6 +170,7 @@ function factsOf(facts: OracleFacts): Record<string, unknown> {
     logEndUs: instant(facts.logEndUs),
     analysedByDay: facts.analysedByDay,
     subgroups: facts.subgroups,
+    inIncidents: facts.inIncidents,
     soundness: soundnessOutcome(facts.soundness),
   };
 }

@@ -47,6 +47,7 @@ export type OracleFacts = Pick<
   | "missingVariants"
   | "firstEnrolledUs"
   | "lastEnrolledUs"
+  | "inIncidents"
   | "logEndUs"
   | "analysedByDay"
   | "subgroups"

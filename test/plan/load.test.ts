@@ -108,6 +108,8 @@ describe("a plan", () => {
       subgroups: [],
       decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: 100000,
+      looks: null,
+      incidents: [],
       forecast: null,
       texts: {
         ended: "the planned two weeks were over",
@@ -161,6 +163,8 @@ describe("a plan", () => {
       subgroups: [],
       decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: null,
+      looks: null,
+      incidents: [],
       forecast: null,
       texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
       columns: ["visitor"],

@@ -95,6 +95,7 @@ function comparable(plan: Plan): Plan {
   return {
     ...plan,
     numericColumns: [...plan.numericColumns].sort(),
+    incidents: plan.incidents.map((incident) => ({ ...incident, where: where(incident.where) })),
     filters: plan.filters.map((filter) => ("where" in filter ? { ...filter, where: where(filter.where) } : filter)),
     metrics: plan.metrics.map((metric) => ({
       ...metric,

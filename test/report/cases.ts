@@ -300,6 +300,8 @@ export const little = inputs({
     followUp: null,
     filters: [],
     plannedUnits: null,
+    looks: null,
+    incidents: [],
     metrics: [booked, contacts, { ...fare, cap: null, worthwhile: null, role: "primary" }, perSearch],
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
   },

@@ -3,6 +3,7 @@ import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
 import { hostile } from "./hostile.ts";
+import { atALook, meanwhile } from "./meanwhile.ts";
 import { quantiles } from "./quantiles.ts";
 
 /** Every hand-made report, by name. */
@@ -16,5 +17,7 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["far from normal", farFromNormal],
   ["adjusted", adjustedCase],
   ["quantiles", quantiles],
+  ["incidents", meanwhile],
+  ["an interim look", atALook],
   ["hostile", hostile],
 ];

@@ -133,6 +133,8 @@ export const farePlan: Plan = {
   subgroups: [],
   decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
   plannedUnits: 100_000,
+  looks: null,
+  incidents: [],
   forecast: null,
   texts: {
     ended: "the planned two weeks were over",

@@ -101,6 +101,7 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       missingEvents: [],
       missingVariants: [],
       firstEnrolledUs: 1_772_407_300_000_000n, // 2 March 2026, 00:21 in Oslo
+      inIncidents: plan.incidents.map(() => plan.variants.map(() => 700)),
       lastEnrolledUs: 1_773_615_500_000_000n, // 15 March 2026, 23:58 in Oslo
       logEndUs: 1_774_220_000_000_000n,
       analysedByDay: [],

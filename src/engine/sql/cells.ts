@@ -65,20 +65,29 @@ export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
 /** Arm by arm, the units whose value is not 0. */
 export const unlessZero = (x: Statement): Over => ({ bucket: sql`0`, units: sql`(analysed AND ${x} <> 0)` });
 
-/** How a candidate stands to the choices of units: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day. */
-const STANDING = sql`CASE WHEN analysed THEN 1 ELSE 0 END + CASE WHEN other_way THEN 2 ELSE 0 END
-    + CASE WHEN any_follow_up THEN 4 ELSE 0 END + CASE WHEN first_day THEN 8 ELSE 0 END`;
+/**
+ * How a candidate stands to the choices of units: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day, and
+ * from 16 on one an incident, enrolled in it.
+ */
+function standing(incidents: number): Statement {
+  const bits = ["analysed", "other_way", "any_follow_up", "first_day", ...inIncidents(incidents)];
+  const terms = bits.map((column, k) => sql`CASE WHEN ${name(column)} THEN ${2 ** k} ELSE 0 END`);
+  return join(terms, " + ");
+}
+
+const inIncidents = (incidents: number) => Array.from({ length: incidents }, (_, k) => `i${k}`);
 
 /** Apart by standing, those that not every choice of units counts. */
-export const OTHERWISE: Over = {
-  bucket: STANDING,
-  units: sql`(NOT analysed OR NOT other_way OR NOT any_follow_up OR first_day)`,
-};
+export function otherwise(incidents: number): Over {
+  const alike = sql`analysed AND other_way AND any_follow_up`;
+  const apart = ["first_day", ...inIncidents(incidents)].map((column) => name(column));
+  return { bucket: standing(incidents), units: sql`(NOT (${alike}) OR ${join(apart, " OR ")})` };
+}
 export const NOT_ANALYSED = sql`(SELECT * FROM candidates WHERE NOT analysed)`;
 
 /** Gives variant, standing, units. */
-export const standingCounts = (): Statement => sql`
-  SELECT variant, ${STANDING} AS standing, count(*) AS units FROM candidates GROUP BY 1, 2`;
+export const standingCounts = (incidents: number): Statement => sql`
+  SELECT variant, ${standing(incidents)} AS standing, count(*) AS units FROM candidates GROUP BY 1, 2`;
 
 /** Units above the first of some caps in ascending order, apart by how many of the caps they lie above. */
 export function aboveCaps(x: Statement, caps: readonly string[], dialect: Dialect): Over {

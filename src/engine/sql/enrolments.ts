@@ -1,5 +1,5 @@
 import type { Plan } from "../../plan/types.ts";
-import { FATE, type Layout, unitLineIds } from "../layout.ts";
+import { FATE, type IncidentLayout, type Layout, unitLineIds } from "../layout.ts";
 import { contentOrder } from "./duplicates.ts";
 import { stored } from "./rows.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
@@ -92,14 +92,15 @@ export function atEnrolment(layout: Layout, key: EnrolmentKey): Statement {
 export const needsEnrollingRow = (layout: Layout): boolean =>
   layout.covariateColumns.length > 0 ||
   layout.subgroupColumns.length > 0 ||
-  layout.unitFilters.some((filter) => filter.kind === "at-enrolment");
+  layout.unitFilters.some((filter) => filter.kind === "at-enrolment") ||
+  layout.incidents.some(({ flag }) => flag !== null);
 
 /**
  * Stage 6: each unit and the line on which it ends (DESIGN 4, rule 6), first that applies.
  * Reads   seen, at_enrolment (where something is judged at enrolment), list_<i>
  * Writes  enrolments: unit, rows, enrolled_us, variant, switched, z<c> and g<c> of stage 5, line (index into unitLineIds), and for other reasonable
  *         choices whether the unit were analysed if units in two variants were treated the other way (other_way) or if
- *         follow-up need not be complete (any_follow_up)
+ *         follow-up need not be complete (any_follow_up); i<k>: whether it enrolled in incident k
  */
 export function enrolments(plan: Plan, layout: Layout, key: EnrolmentKey, logEndUs: bigint | null): Statement {
   const variants = plan.variants.length;
@@ -142,6 +143,7 @@ export function enrolments(plan: Plan, layout: Layout, key: EnrolmentKey, logEnd
       sql`${ends(isExcluding ? switchers : [], filters, late)} AS line`,
       sql`${ends(isExcluding ? [] : switchers, filters, late)} = ${analysed} AS other_way`,
       sql`${ends(isExcluding ? switchers : [], filters)} = ${analysed} AS any_follow_up`,
+      ...layout.incidents.map((incident, k) => sql`${isIn(incident)} AS ${name(`i${k}`)}`),
     ])}
     FROM (
       SELECT ${list([
@@ -152,6 +154,12 @@ export function enrolments(plan: Plan, layout: Layout, key: EnrolmentKey, logEnd
       ])}
       FROM seen AS s ${usesEnrolment ? sql`LEFT JOIN at_enrolment AS a ON a.unit = s.unit` : sql``}
     )`;
+}
+
+/** FALSE for a unit that no row enrols. */
+function isIn({ fromUs, beforeUs, flag }: IncidentLayout): Statement {
+  const there = flag === null ? sql`` : sql` AND ${name(`a${flag}`)}`;
+  return sql`coalesce(enrolled_us >= ${fromUs} AND enrolled_us < ${beforeUs}${there}, FALSE)`;
 }
 
 /** Length of follow-up in microseconds; days are of 24 hours. */

@@ -41,6 +41,15 @@ export const unitsWithFate = (fate: number, unknownVariantLine: number): Stateme
 export const enrolmentRange = (analysedLine: number): Statement => sql`
   SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line = ${analysedLine}`;
 
+/** Of the analysed, those that enrolled in each incident. Gives variant, units<k>. */
+export function unitsInIncidents(incidents: number): Statement {
+  const counts = Array.from(
+    { length: incidents },
+    (_, k) => sql`count(*) FILTER (WHERE ${name(`i${k}`)}) AS ${name(`units${k}`)}`,
+  );
+  return sql`SELECT variant, ${join(counts, ", ")} FROM units GROUP BY variant`;
+}
+
 /** Values that rows hold, rejected ones included, commonest first. */
 export const eventCounts = (limit: number): Statement => sql`
   SELECT event AS value, count(*) AS rows FROM rows

@@ -9,7 +9,8 @@ import { join, name, type Statement, sql } from "./sql.ts";
  * Stage 7: one row per unit that is analysed, or would be under another reasonable choice.
  * Reads   rows, enrolments
  * Writes  candidates: variant, bucket, analysed, other_way, any_follow_up, first_day (enrolled on the first local day on
- *         which an analysed unit was), followed (to the end of its follow-up), day (the local one of enrolment, 0 without time), k<s> (the level of subgroup column s), before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where
+ *         which an analysed unit was), followed (to the end of its follow-up), day (the local one of enrolment, 0 without time), k<s> (the level of subgroup column s),
+ *         i<k> (enrolled in incident k), before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where
  *         the unit is left out; per metric counted<m>, its counted rows, numberless<m>, those of them without a number,
  *         and z<m>, its covariate, NULL where missing
  * Every unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
@@ -70,6 +71,7 @@ export function candidates(
         : sql`e.enrolled_us + ${followUpUs(plan)} <= ${logEndUs} AS followed`,
       sql`CAST(${enrolledOn} AS INTEGER) AS day`,
       ...levels.map((level, s) => sql`${level} AS ${name(`k${s}`)}`),
+      ...layout.incidents.map((_, k) => sql`e.${name(`i${k}`)}`),
       sql`before_rows, after_rows, inside_rows`,
       ...values,
     ])}

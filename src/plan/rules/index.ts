@@ -3,7 +3,9 @@ import type { YamlText } from "../yaml.ts";
 import { enrolmentRules } from "./enrolment.ts";
 import { exactRules } from "./exact.ts";
 import { filterRules } from "./filters.ts";
+import { incidentRules } from "./incidents.ts";
 import { logRules } from "./log.ts";
+import { lookRules } from "./looks.ts";
 import type { Loose } from "./loose.ts";
 import { metricRules } from "./metrics.ts";
 import { nameRules } from "./names.ts";
@@ -20,6 +22,8 @@ const RULES: readonly ((plan: Loose, yaml: YamlText) => readonly Problem[])[] = 
   filterRules,
   subgroupRules,
   nameRules,
+  incidentRules,
+  lookRules,
 ];
 
 export function ruleProblems(plan: Loose, yaml: YamlText): readonly Problem[] {

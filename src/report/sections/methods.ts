@@ -3,6 +3,7 @@ import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
+import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
@@ -129,11 +130,12 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
       source: "Welch 1947, Biometrika 34, 28-35; Satterthwaite 1946",
     },
     {
-      when: others > 1,
+      when: others > 1 && plan.looks === null,
       name: "Several variants",
       how: `Each variant is compared with the control. For what decides and what must not get worse, the ${others} intervals hold together with ${confidence} confidence: they share the control, and their critical value allows for that. p is adjusted in one step by the same distribution; Holm\u2019s, by several steps, stands beside it and does not decide.${simply ? " Where that distribution is not to be had, the error is shared out evenly over the variants: for quantiles, and where a group has no spread." : ""}`,
       source: `Dunnett 1955, Journal of the American Statistical Association 50, 1096-1121; by Dunnett 1989, Applied Statistics 38, 564-579; Holm 1979, Scandinavian Journal of Statistics 6, 65-70${simply ? "; Dunn 1961, Journal of the American Statistical Association 56, 52-64" : ""}`,
     },
+    ...lookMethods(plan, others, confidence),
     {
       when: primaries > 1 && !anyIsEnough(plan),
       name: "Several deciding measures",
@@ -202,7 +204,7 @@ function cautions(plan: Plan): string[] {
     "Statistical evidence is not the whole decision: cost, law, strategy and the people concerned are not in the figures.",
     "Experiments on people need the consent and the privacy that the law of the place asks for; event logs are personal data.",
     "Not for clinical, safety or other regulated decisions: these need a registered protocol and a licensed practitioner.",
-    "The size of this test was to be fixed beforehand. Looking at the result before the planned end, and stopping when it pleases, makes false results more frequent than stated.",
+    lookCaution(plan),
     secondary.length === 0
       ? "What was not named beforehand as deciding can suggest; it does not decide."
       : `Measures for information suggest, they do not decide: ${list(secondary)}.`,
