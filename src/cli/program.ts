@@ -1,8 +1,7 @@
 import { Command, CommanderError } from "commander";
-import type { CloseoutOptions } from "../index.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
-import { report } from "./report.ts";
+import { type ReportArguments, report } from "./report.ts";
 import { schema } from "./schema.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 import { unwritableText } from "./unwritable.ts";
@@ -69,6 +68,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
     .usage("PLAN [options]")
     .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
+    .option("--previous <REPORT>", "the report.json to compare with, or none (default: the one in the report's folder)")
     .option("--threads <N>", "how many processor cores to use (default: all)")
     .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
     .option("--debug", "on a fault of closeout itself, print where it happened")
@@ -115,11 +115,12 @@ used; 1 a fault of closeout itself.`;
 
 interface RawOptions {
   readonly out?: string;
+  readonly previous?: string;
   readonly threads?: string;
   readonly memory?: string;
 }
 
-function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptions, "out" | "threads" | "memory"> {
+function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["options"] {
   const problems: string[] = [];
   if (raw.out?.trim() === "") problems.push("--out needs the name of a folder.");
   if (raw.threads !== undefined && !/^[1-9]\d{0,3}$/.test(raw.threads)) {
@@ -131,6 +132,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptio
   if (problems.length > 0) throw wrongArguments(problems.join("\n"), command);
   return {
     ...(raw.out === undefined ? {} : { out: raw.out }),
+    ...(raw.previous === undefined ? {} : { previous: raw.previous }),
     ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
     ...(raw.memory === undefined ? {} : { memory: raw.memory }),
   };

@@ -12,13 +12,19 @@ export { reportJson } from "./json.ts";
 export { reportJsonSchema } from "./schema.ts";
 export { summaryMd } from "./summary.ts";
 export { terminalText } from "./terminal.ts";
+// reruns: the report that is replaced, and where it is kept
+export type { Rerun } from "./changes/changes.ts";
+export type { StepJson, StepsJson } from "./changes/types.ts";
+export type { Kept } from "./folder.ts";
+export { fingerprintOf, keptName, keptReport, shortFingerprint } from "./history.ts";
+export { firstPlanOf, type PreviousReport, previousReport, runOf } from "./previous.ts";
 // what goes in and what comes out
 export type { ReportFile, ReportFiles, ReportInputs, ReportJson, TerminalPaths } from "./types.ts";
 
 /** The report's files as text, and its text for a terminal. Writes nothing: whoever calls it owns the folder. */
 export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {
   const json = reportJson(inputs);
-  const html = renderPage(await page(inputs));
+  const html = renderPage(await page(inputs, json.changes));
   return {
     json,
     html,

@@ -1,11 +1,14 @@
 import { controlOf, whenText } from "./plan-words.ts";
-import { type ChecksSection, checksSection } from "./sections/checks.ts";
+import { type ChecksSection, checksSection, titleOf } from "./sections/checks.ts";
+import type { ChangesJson } from "./changes/types.ts";
+import { type ChangesSection, changesSection } from "./sections/changes.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type RerunLines, rerunLines } from "./sections/rerun.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
@@ -22,6 +25,9 @@ export interface Page {
   readonly confidence: string;
   readonly contents: readonly { readonly number: number; readonly id: string; readonly title: string }[];
   readonly decision: DecisionSection;
+  /** Null in a first report. */
+  readonly rerun: RerunLines | null;
+  readonly changes: ChangesSection | null;
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
@@ -39,6 +45,7 @@ export interface FurtherOnMetric {
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
 const CONTENTS = [
   { number: 1, id: "decision", title: "Decision" },
+  { number: 2, id: "changes", title: "What changed" },
   { number: 3, id: "trust", title: "Can the data be trusted?" },
   { number: 4, id: "counted", title: "Who was counted" },
   { number: 5, id: "metrics", title: "Each measure" },
@@ -46,7 +53,7 @@ const CONTENTS = [
   { number: 7, id: "methods", title: "Methods, sources, cautions" },
 ] as const;
 
-export async function page(inputs: ReportInputs): Promise<Page> {
+export async function page(inputs: ReportInputs, changes: ChangesJson | null = null): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
@@ -60,8 +67,10 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     undecidable: conclusion.decision === "undecidable",
     control: controlOf(plan).name,
     confidence: `${Number((plan.decision.confidence * 100).toPrecision(12))}%`,
-    contents: CONTENTS,
+    contents: CONTENTS.filter(({ number }) => number !== 2 || changes !== null),
     decision: await decisionSection(inputs),
+    rerun: changes === null ? null : rerunLines(changes, plan),
+    changes: changes === null ? null : await changesSection(changes, plan, titleOf),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({

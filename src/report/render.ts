@@ -8,6 +8,8 @@ import { typeset } from "./typeset.ts";
 const FOLDER = new URL("../../templates/", import.meta.url);
 const PARTIALS = [
   "decision",
+  "rerun",
+  "changes",
   "forest",
   "choices",
   "turning",

@@ -2,6 +2,8 @@ import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
 import type { ChoiceName, Choices, Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
 import type { Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
+import type { Rerun } from "./changes/changes.ts";
+import type { ChangesJson } from "./changes/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
 
 /** report.json: the contract of DESIGN 7. Numbers carry 12 significant digits; what does not exist is null. */
@@ -20,7 +22,7 @@ export interface ReportJson {
   readonly subgroups: readonly never[];
   readonly accrual: readonly never[];
   readonly sensitivity: readonly SensitivityJson[];
-  readonly changes: null;
+  readonly changes: ChangesJson | null;
   readonly provenance: ProvenanceJson;
 }
 
@@ -133,6 +135,8 @@ export interface ReportInputs {
   /** One an effect, in their order. */
   readonly choices: readonly Choices[];
   readonly conclusion: Conclusion;
+  /** Of a report that replaces an earlier one. */
+  readonly rerun?: Rerun | undefined;
 }
 
 export interface ReportFiles {

@@ -29,6 +29,7 @@ export function planOf(changes: Partial<Plan> = {}): Plan {
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: null,
     forecast: null,
+    registered: null,
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
     columns: [],
     numericColumns: [],

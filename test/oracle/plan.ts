@@ -63,6 +63,7 @@ export function planFromYaml(text: string): Plan {
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: numberAt(at(root, "planned"), "units"),
     forecast: null,
+    registered: null,
     texts: { ended: textAt(root, "ended"), owner: null, link: null, limits: null, notes: null, decided: null },
     ...namedColumns(root),
   };

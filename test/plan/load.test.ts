@@ -108,6 +108,7 @@ describe("a plan", () => {
       decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: 100000,
       forecast: null,
+      registered: null,
       texts: {
         ended: "the planned two weeks were over",
         owner: "search team",
@@ -160,6 +161,7 @@ describe("a plan", () => {
       decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
       plannedUnits: null,
       forecast: null,
+      registered: null,
       texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
       columns: ["visitor"],
       numericColumns: [],

@@ -133,6 +133,7 @@ export const farePlan: Plan = {
   decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
   plannedUnits: 100_000,
   forecast: null,
+  registered: null,
   texts: {
     ended: "the planned two weeks were over",
     owner: "search team",
