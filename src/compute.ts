@@ -76,7 +76,7 @@ export function decisionReport(
   const { reduction, arms, pairs } = measured;
   const { effects, conclusion } = found;
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
-  const checks = rerun === null ? found.checks : [...found.checks, ...planCheck(planText, rerun)];
+  const checks = [...found.checks, ...planCheck(plan, planText, rerun)];
   return renderReport({
     plan,
     planText,
@@ -91,8 +91,9 @@ export function decisionReport(
   });
 }
 
-function planCheck(planText: string, { previous }: Rerun): Check[] {
-  const check = planChanged(planChanges(firstPlanOf(previous.report).text, planText));
+function planCheck(plan: Plan, planText: string, rerun: Rerun | null): Check[] {
+  const changes = rerun === null ? null : planChanges(firstPlanOf(rerun.previous.report).text, planText);
+  const check = planChanged(plan, changes);
   return check === null ? [] : [check];
 }
 

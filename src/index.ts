@@ -10,6 +10,9 @@ import { replacedReport } from "./rerun.ts";
 import { rerunOf } from "./steps.ts";
 import { version } from "./version.ts";
 
+export { type Compared, compareReports } from "./compare.ts";
+export { type Sealed, seal } from "./seal.ts";
+export { type Verified, type VerifyOptions, verify } from "./verify/verify.ts";
 export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };
 

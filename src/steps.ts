@@ -2,7 +2,15 @@ import { performance } from "node:perf_hooks";
 import { type Judged, judged, type Measured, measure } from "./compute.ts";
 import { deciding, type Effect } from "./decision/index.ts";
 import { type ReduceOptions, UnusableLog } from "./engine/index.ts";
-import { combinedPlan, loadPlan, type Plan, type PlanSource, type PlanStep, planChanges, planSteps } from "./plan/index.ts";
+import {
+  combinedPlan,
+  loadPlan,
+  type Plan,
+  type PlanSource,
+  type PlanStep,
+  planChanges,
+  planSteps,
+} from "./plan/index.ts";
 import { firstPlanOf, type PreviousReport, type Rerun, type StepJson, type StepsJson } from "./report/index.ts";
 
 /** The new report before it is written. */
@@ -140,8 +148,7 @@ function stepEffect(effect: Effect): StepJson["effects"][number] {
     estimate,
     low,
     high,
-    relative:
-      "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high },
+    relative: "absent" in relative ? null : { estimate: relative.estimate, low: relative.low, high: relative.high },
   };
 }
 
@@ -149,7 +156,8 @@ function stepEffect(effect: Effect): StepJson["effects"][number] {
 function isSameLog({ provenance }: PreviousReport["report"], { reduction }: Measured): boolean {
   type Files = readonly { readonly name: string; readonly sha256: string }[];
   const prints = (files: Files) => JSON.stringify(files.map(({ name, sha256 }) => [name, sha256]));
-  const lists = (files: Files, other: Files) => prints(files.filter(({ name }) => other.some((one) => one.name === name)));
+  const lists = (files: Files, other: Files) =>
+    prints(files.filter(({ name }) => other.some((one) => one.name === name)));
   return (
     prints(provenance.inputs) === prints(reduction.inputs) &&
     lists(provenance.lists, reduction.lists) === lists(reduction.lists, provenance.lists)

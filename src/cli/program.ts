@@ -1,11 +1,14 @@
 import { Command, CommanderError } from "commander";
+import { compare } from "./compare.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
 import { type ReportArguments, report } from "./report.ts";
 import { schema } from "./schema.ts";
+import { seal } from "./seal.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 import { unwritableText } from "./unwritable.ts";
 import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
+import { verify } from "./verify.ts";
 
 export interface Surroundings {
   readonly terminal: Terminal;
@@ -78,6 +81,47 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     });
 
   program
+    .command("verify")
+    .summary("prove that a report says what its log says")
+    .description(
+      "Makes a report anew from the plan inside it and from the log, and compares the two. Says what differs: a file of the log, a number, a sentence.",
+    )
+    .argument("REPORT", "the report.html, or the folder that it lies in")
+    .usage("REPORT [options]")
+    .option("--base <DIR>", "the folder that the plan lay in (default: looked for above the report)")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (file: string, options: RawOptions) => {
+      const { threads, memory } = readOptions(options, facts(program, "verify"));
+      end(await verify({ file, options: { base: options.base, threads, memory } }, terminal, await load(), signal));
+    });
+
+  program
+    .command("compare")
+    .summary("say what differs between two reports")
+    .description("Compares two reports of one experiment: plan, log, who was counted, estimates, checks, conclusion.")
+    .argument("OLD", "a report.json")
+    .argument("NEW", "another report.json")
+    .usage("OLD NEW [options]")
+    .option("--out <FILE>", "write it as a document, an HTML file, instead of to the terminal")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (before: string, after: string, options: RawOptions) => {
+      end(await compare({ before, after, out: options.out }, terminal, await load()));
+    });
+
+  program
+    .command("seal")
+    .summary("print the fingerprint of a plan's rule, to keep before the start")
+    .description(
+      "Prints the fingerprint of what decides: metrics, allocation, enrolment, follow-up and decision. Kept before the start, it proves later that the rule came first.",
+    )
+    .argument("PLAN", "the plan, a YAML file")
+    .usage("PLAN")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string) => end(await seal(plan, terminal, await load())));
+
+  program
     .command("demo")
     .summary("try it: an invented test with its log, plan and report")
     .description(
@@ -111,11 +155,12 @@ Examples:
 
 Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments
 are wrong, or a file or column that they name is not there; 3 the log cannot be
-used; 1 a fault of closeout itself.`;
+used; 4 verify: the report does not hold; 1 a fault of closeout itself.`;
 
 interface RawOptions {
   readonly out?: string;
   readonly previous?: string;
+  readonly base?: string;
   readonly threads?: string;
   readonly memory?: string;
 }

@@ -30,7 +30,8 @@ function idOf({ section, item, kind }: Pick<PlanChange, "section" | "item" | "ki
 function labelOf([first, ...others]: readonly PlanChange[]): string {
   if (first === undefined) throw new Error("a step without a change");
   const whole = first.item !== null && first.place === `${first.section}, ${first.item}`;
-  if (whole || !first.place.includes(":")) return first.kind === "changed" ? first.place : `${first.place}: ${first.kind}`;
+  if (whole || !first.place.includes(":"))
+    return first.kind === "changed" ? first.place : `${first.place}: ${first.kind}`;
   return [first.place, ...others.map(({ place }) => place.slice(place.lastIndexOf(": ") + 2))].join(", ");
 }
 
@@ -38,7 +39,12 @@ function labelOf([first, ...others]: readonly PlanChange[]): string {
  * The earlier plan with some of the steps to the later one taken, as the text of a plan. What no figure depends on is the
  * later plan's. All steps give the later plan, but for the digits of numbers that a double does not hold.
  */
-export function combinedPlan(before: string, after: string, steps: readonly PlanStep[], taken: readonly PlanStep[]): string {
+export function combinedPlan(
+  before: string,
+  after: string,
+  steps: readonly PlanStep[],
+  taken: readonly PlanStep[],
+): string {
   const [was, is] = [dataOf(before), dataOf(after)];
   const known = new Set(steps.flatMap(({ ids }) => ids));
   const chosen = new Set(taken.flatMap(({ ids }) => ids));

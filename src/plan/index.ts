@@ -1,5 +1,5 @@
 /** What differs between two plans, and the fingerprint of what decides. */
-export { type PlanChange, planChanges, planIn } from "./changes.ts";
+export { mergedNames, type PlanChange, planChanges, planIn } from "./changes.ts";
 export { combinedPlan, type PlanStep, planSteps } from "./combine.ts";
 /** From text to plan. */
 export { type LoadedPlan, loadPlan } from "./load.ts";

@@ -5,6 +5,9 @@ import path from "node:path";
 /** Where earlier reports of an experiment are kept, each in a folder of its own. */
 export const HISTORY = "history";
 
+/** The words before the fingerprint of the report that a rerun replaces, in section 7: by them it is found again. */
+export const REPLACES = "Replaces the report with the fingerprint";
+
 /** The fingerprint of a report: SHA-256 of its report.json, byte for byte. */
 export function fingerprintOf(json: string): string {
   return createHash("sha256").update(json).digest("hex");

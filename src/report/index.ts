@@ -6,18 +6,19 @@ import { summaryMd } from "./summary.ts";
 import { terminalText } from "./terminal.ts";
 import type { ReportFiles, ReportInputs } from "./types.ts";
 
-// the report's parts, for tests and for whoever needs one alone
-export { effectsCsv } from "./csv.ts";
-export { reportJson } from "./json.ts";
-export { reportJsonSchema } from "./schema.ts";
-export { summaryMd } from "./summary.ts";
-export { terminalText } from "./terminal.ts";
 // reruns: the report that is replaced, and where it is kept
 export type { Rerun } from "./changes/changes.ts";
 export type { StepJson, StepsJson } from "./changes/types.ts";
+export { type ComparedReports, comparisonPage, comparisonText } from "./comparison.ts";
+// the report's parts, for tests and for whoever needs one alone
+export { effectsCsv } from "./csv.ts";
 export type { Kept } from "./folder.ts";
-export { fingerprintOf, keptName, keptReport, shortFingerprint } from "./history.ts";
+export { fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
+export { reportJson } from "./json.ts";
 export { firstPlanOf, type PreviousReport, previousReport, runOf } from "./previous.ts";
+export { reportJsonSchema } from "./schema.ts";
+export { summaryMd } from "./summary.ts";
+export { terminalText } from "./terminal.ts";
 // what goes in and what comes out
 export type { ReportFile, ReportFiles, ReportInputs, ReportJson, TerminalPaths } from "./types.ts";
 

@@ -1,7 +1,7 @@
-import { controlOf, whenText } from "./plan-words.ts";
-import { type ChecksSection, checksSection, titleOf } from "./sections/checks.ts";
 import type { ChangesJson } from "./changes/types.ts";
+import { controlOf, whenText } from "./plan-words.ts";
 import { type ChangesSection, changesSection } from "./sections/changes.ts";
+import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
@@ -70,7 +70,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     contents: CONTENTS.filter(({ number }) => number !== 2 || changes !== null),
     decision: await decisionSection(inputs),
     rerun: changes === null ? null : rerunLines(changes, plan),
-    changes: changes === null ? null : await changesSection(changes, plan, titleOf),
+    changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({

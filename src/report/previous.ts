@@ -44,7 +44,16 @@ const earlier = z.object({
       metric: z.string(),
       variant: z.string(),
       role: z.enum(["primary", "secondary", "guardrail"]),
-      zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
+      zone: z.enum([
+        "worthwhile",
+        "worse",
+        "too-small",
+        "better",
+        "no-worthwhile-gain",
+        "not-settled",
+        "within",
+        "beyond",
+      ]),
       arms: z.object({ control: arm, variant: arm }),
       difference,
       relative,
@@ -84,6 +93,9 @@ export function runOf({ changes }: Pick<EarlierReport, "changes">): number {
 }
 
 /** The plan of the first run of a report's line of runs. */
-export function firstPlanOf({ changes, provenance }: EarlierReport): { readonly sha256: string; readonly text: string } {
+export function firstPlanOf({ changes, provenance }: EarlierReport): {
+  readonly sha256: string;
+  readonly text: string;
+} {
   return changes?.first ?? provenance.plan;
 }

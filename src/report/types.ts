@@ -2,9 +2,9 @@ import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
 import type { ChoiceName, Choices, Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
 import type { Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
+import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
 import type { Rerun } from "./changes/changes.ts";
 import type { ChangesJson } from "./changes/types.ts";
-import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
 
 /** report.json: the contract of DESIGN 7. Numbers carry 12 significant digits; what does not exist is null. */
 export interface ReportJson {

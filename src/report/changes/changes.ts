@@ -1,4 +1,4 @@
-import type { PlanChange } from "../../plan/index.ts";
+import { mergedNames, type PlanChange } from "../../plan/index.ts";
 import { type EarlierReport, firstPlanOf, type PreviousReport, runOf } from "../previous.ts";
 import type { ReportJson } from "../types.ts";
 import type { ChangesJson, EffectChange, FileChange, LineChange, Shown, StepsJson } from "./types.ts";
@@ -53,9 +53,13 @@ function files(before: Readonly<Files>, after: readonly Files[number][], list: b
     const found = files.find((file) => file.name === name);
     return found === undefined ? null : { bytes: found.bytes, sha256: found.sha256, rows: found.rows };
   };
-  return union(after, before, ({ name }) => name)
-    .map((name) => ({ name, list, before: of(before, name), after: of(after, name) }))
-    .filter((file) => file.before?.sha256 !== file.after?.sha256);
+  return (
+    union(after, before, ({ name }) => name)
+      .map((name) => ({ name, list, before: of(before, name), after: of(after, name) }))
+      .filter((file) => file.before?.sha256 !== file.after?.sha256)
+      // a list that only one of the plans names is that plan's change
+      .filter((file) => !list || (file.before !== null && file.after !== null))
+  );
 }
 
 function rowLines(before: EarlierReport, after: EarlierReport | After): LineChange[] {
@@ -131,7 +135,7 @@ function told({ decision, variant, sentence }: EarlierReport["conclusion"]) {
   return { decision, variant, sentence };
 }
 
-/** Keys of the first list, then those that only the second has. */
-function union<T>(first: readonly T[], second: readonly T[], key: (item: T) => string): string[] {
-  return [...new Set([...first.map(key), ...second.map(key)])];
+/** Keys of the first list, each that only the second has behind its neighbour there. */
+function union<T>(first: readonly T[], second: readonly T[], key: (item: T) => string): readonly string[] {
+  return mergedNames(first.map(key), second.map(key));
 }

@@ -22,7 +22,16 @@ const ends = { estimate: numberOrNull, low: numberOrNull, high: numberOrNull, re
 const shown = z
   .strictObject({
     ...ends,
-    zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
+    zone: z.enum([
+      "worthwhile",
+      "worse",
+      "too-small",
+      "better",
+      "no-worthwhile-gain",
+      "not-settled",
+      "within",
+      "beyond",
+    ]),
     units: z.strictObject({ control: z.number(), variant: z.number() }),
     totals: z.strictObject({ control: numberOrNull, variant: numberOrNull }),
   })

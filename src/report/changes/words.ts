@@ -28,7 +28,10 @@ export function isOtherConclusion(
 }
 
 /** 'adopt "calendar"', 'stay with "list"', "not settled", "nothing can be decided". */
-export function conclusionText({ decision, variant }: Pick<ConclusionJson, "decision" | "variant">, plan: Plan): string {
+export function conclusionText(
+  { decision, variant }: Pick<ConclusionJson, "decision" | "variant">,
+  plan: Plan,
+): string {
   switch (decision) {
     case "adopt":
       return variant === null ? "adopt" : `adopt ${quoted(variant)}`;

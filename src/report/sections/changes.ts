@@ -1,17 +1,20 @@
 import type { Plan } from "../../plan/index.ts";
 import { count, planPercent, plural } from "../../words/index.ts";
+import type { ChangesJson, EffectChange } from "../changes/types.ts";
+import { movedText, nameOf, ordinal, saidBefore, shownTexts } from "../changes/words.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type ForestAxis, type ForestRow, forestAxis, forestScale, forestStrip } from "../charts/forest.ts";
 import { theme } from "../charts/theme.ts";
-import type { ChangesJson, EffectChange } from "../changes/types.ts";
-import { movedText, nameOf, ordinal, saidBefore, shownTexts } from "../changes/words.ts";
 import { NONE } from "../effect-text.ts";
 import { shortFingerprint } from "../history.ts";
+import { titleOf } from "./checks.ts";
 import { percentLabel } from "./forest.ts";
 import { type StepsTable, stepsTable } from "./steps.ts";
 
 /** Section 2, on a rerun only: what is not as it was. */
 export interface ChangesSection {
+  /** Of the section; null in a document of its own. */
+  readonly number: number | null;
   readonly intro: string;
   readonly conclusion: string;
   readonly before: string;
@@ -64,11 +67,11 @@ export interface BeforeAfterRow {
 export async function changesSection(
   changes: ChangesJson,
   plan: Plan,
-  titleOf: (check: string) => string,
+  before = `${ordinal(changes.run - 1)} run`,
 ): Promise<ChangesSection> {
   const { run, replaces, log, flow, checks } = changes;
-  const before = `${ordinal(run - 1)} run`;
   return {
+    number: 2,
     intro: `This is the ${ordinal(run)} run of this report. It replaces the one with the fingerprint ${shortFingerprint(replaces)}, which is kept in history/.`,
     conclusion: saidBefore(changes),
     before,
@@ -116,9 +119,7 @@ function ruleNote({ rule, run }: ChangesJson): string {
 }
 
 function fileText(file: ChangesJson["log"][number]["before"]): string {
-  return file === null
-    ? "not there"
-    : `${plural(file.rows, "row", "rows")}, ${shortFingerprint(file.sha256)}`;
+  return file === null ? "not there" : `${plural(file.rows, "row", "rows")}, ${shortFingerprint(file.sha256)}`;
 }
 
 function lineRow(change: ChangesJson["flow"][number]): LineRow {
@@ -126,7 +127,7 @@ function lineRow(change: ChangesJson["flow"][number]): LineRow {
   return { line: change.line, before: text(change.before), after: text(change.after), by: movedText(change) };
 }
 
-async function beforeAfter({ effects, run }: ChangesJson, plan: Plan, before: string): Promise<BeforeAfter> {
+async function beforeAfter({ effects }: ChangesJson, plan: Plan, before: string): Promise<BeforeAfter> {
   const texts = effects.map((effect) => {
     const metric = plan.metrics.find(({ name }) => name === effect.metric) ?? null;
     return { effect, ...shownTexts(effect, metric) };
@@ -143,14 +144,15 @@ async function beforeAfter({ effects, run }: ChangesJson, plan: Plan, before: st
         metric: nameOf(text.effect, plan),
         run: isNow ? "now" : before,
         isNow,
-        drawing: own.drawn === null ? null : await strip(rowOf(own.drawn, text.effect, isNow), axis, `change-${i + 1}`, isNow),
+        drawing:
+          own.drawn === null ? null : await strip(rowOf(own.drawn, text.effect, isNow), axis, `change-${i + 1}`, isNow),
         estimate: own.estimate,
         interval: own.interval === "" ? "" : `(${own.interval})`,
       });
     }
   }
   return {
-    reading: `Each difference from the control, ${planPercent(plan.decision.confidence)} interval now, in percent of the control\u2019s level. Upper line of each pair, dashed: the ${before}. Lower line: now, run ${run}.`,
+    reading: `Each difference from the control, ${planPercent(plan.decision.confidence)} interval now, in percent of the control\u2019s level. Upper line of each pair, dashed: the ${before}. Lower line: now.`,
     rows,
     axis:
       known.length === 0

@@ -91,7 +91,8 @@ function whichChange({ steps, conclusion }: ChangesJson): string[] {
 }
 
 function ruleSentence({ rule }: ChangesJson): string {
-  if (rule.length === 0) return "The rule did not change: same deciding measures, same amounts, same limits as in the first run.";
+  if (rule.length === 0)
+    return "The rule did not change: same deciding measures, same amounts, same limits as in the first run.";
   const parts = rule.slice(0, MOST_TOLD).map(({ place, before, after }) => {
     return `${quoted(place)} was ${before ?? "not there"} in the first run and is ${after ?? "gone"} now`;
   });

@@ -46,7 +46,12 @@ function estimateText(step: StepJson | null, key: { metric: string; variant: str
   const found = step?.effects.find(({ metric, variant }) => metric === key.metric && variant === key.variant);
   if (found === undefined) return NONE;
   const metric = plan.metrics.find(({ name }) => name === key.metric) ?? null;
-  const own = { ...found, zone: "not-settled", units: { control: 0, variant: 0 }, totals: { control: null, variant: null } } as const;
+  const own = {
+    ...found,
+    zone: "not-settled",
+    units: { control: 0, variant: 0 },
+    totals: { control: null, variant: null },
+  } as const;
   const { after } = shownTexts({ before: null, after: own }, metric);
   return `${after.estimate} (${after.interval})`;
 }
@@ -59,7 +64,8 @@ export function stepSentences({ start, changes }: StepsJson): string[] {
     return added !== null && before !== null && isOtherConclusion(before, added);
   });
   const names = (of: StepsJson["changes"]) => list(of.map(({ change }) => quoted(change)));
-  if (turning.length === 0 && inOrder === undefined) return ["No change moves the conclusion, alone or with the others."];
+  if (turning.length === 0 && inOrder === undefined)
+    return ["No change moves the conclusion, alone or with the others."];
   if (turning.length === 0 && inOrder !== undefined) {
     return [`No change alone moves the conclusion; with those before it, ${quoted(inOrder.change)} does.`];
   }

@@ -9,7 +9,8 @@ import { controlOf } from "../plan-words.ts";
  */
 export function whyItMoved({ plan: changes, log, effects }: ChangesJson, plan: Plan): string[] {
   const counted = changes.filter(({ counts }) => counts);
-  const onlyFilters = counted.length > 0 && counted.every(({ section, kind }) => section === "filters" && kind === "added");
+  const onlyFilters =
+    counted.length > 0 && counted.every(({ section, kind }) => section === "filters" && kind === "added");
   const dropsUnits = counted.every(({ item }) => plan.filters.find(({ name }) => name === item)?.drop === "units");
   if (log.length > 0 || !onlyFilters || !dropsUnits) return [];
   const first = plan.metrics.find(({ role, summary }) => role === "primary" && summary === "proportion");
