@@ -76,7 +76,7 @@ export function decisionReport(
   const { reduction, arms, pairs } = measured;
   const { effects, conclusion } = found;
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
-  const checks = [...found.checks, ...planCheck(plan, planText, rerun)];
+  const checks = [...planCheck(plan, planText, rerun), ...found.checks];
   return renderReport({
     plan,
     planText,

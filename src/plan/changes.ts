@@ -21,7 +21,7 @@ export interface PlanChange {
   readonly counts: boolean;
 }
 
-export const NAMED = ["variants", "metrics", "filters"];
+const NAMED = ["variants", "metrics", "filters"];
 export const TEXTS: readonly string[] = [
   "experiment",
   "question",
@@ -61,11 +61,12 @@ type Found = Omit<PlanChange, "decides" | "counts"> & { readonly key: string | n
 export function planChanges(before: string, after: string): readonly PlanChange[] {
   const [a, b] = [readYaml(before).yaml, readYaml(after).yaml];
   const [dataA, dataB] = [mapping(plainData(a).value), mapping(plainData(b).value)];
-  const found = union(Object.keys(dataB), Object.keys(dataA)).flatMap((section) =>
-    NAMED.includes(section) && isNamed(dataA[section]) && isNamed(dataB[section])
-      ? namedItems(a, b, section, dataA[section], dataB[section])
-      : sectionChanges(a, b, section, dataA[section], dataB[section]),
-  );
+  const found = union(Object.keys(dataB), Object.keys(dataA)).flatMap((section) => {
+    const lists = namedLists(section, dataA[section], dataB[section]);
+    return lists === null
+      ? sectionChanges(a, b, section, dataA[section], dataB[section])
+      : namedItems(a, b, section, lists[0], lists[1]);
+  });
   const parts = changedParts(before, after);
   return found.map(({ key, ...change }) => {
     const text = TEXTS.includes(change.section) || TEXTS_OF_ITEM[change.section]?.includes(key ?? "") === true;
@@ -193,8 +194,19 @@ export interface Named {
   readonly [key: string]: unknown;
 }
 
-export function isNamed(value: unknown): value is readonly Named[] {
+function isNamed(value: unknown): value is readonly Named[] {
   return Array.isArray(value) && value.every((item) => isPlain(item) && typeof item.name === "string");
+}
+
+/** Both as lists of named items, one that is not there as an empty one; null where they are anything else. */
+export function namedLists(
+  section: string,
+  was: unknown,
+  is: unknown,
+): readonly [readonly Named[], readonly Named[]] | null {
+  if (!NAMED.includes(section)) return null;
+  const [a, b] = [was ?? [], is ?? []];
+  return isNamed(a) && isNamed(b) ? [a, b] : null;
 }
 
 export function isPlain(value: unknown): value is Readonly<Record<string, unknown>> {

@@ -1,4 +1,4 @@
-import { isNamed, isPlain, mergedNames, NAMED, type Named, type PlanChange, TEXTS } from "./changes.ts";
+import { isPlain, mergedNames, type Named, namedLists, type PlanChange, TEXTS } from "./changes.ts";
 import { plainData, readYaml } from "./yaml.ts";
 
 /** Changes that belong together: of one item of a list, of one key of the plan. */
@@ -57,8 +57,9 @@ export function combinedPlan(
   const entries = sections.map((section) => {
     const [a, b] = [was[section], is[section]];
     if (TEXTS.includes(section)) return [section, b];
-    if (NAMED.includes(section) && isNamed(a) && isNamed(b)) {
-      return [section, items(a, b, isTaken(section, null, "moved"), (name) => isTaken(section, name))];
+    const lists = namedLists(section, a, b);
+    if (lists !== null) {
+      return [section, items(lists[0], lists[1], isTaken(section, null, "moved"), (name) => isTaken(section, name))];
     }
     return [section, isTaken(section, null) ? b : a];
   });

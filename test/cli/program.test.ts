@@ -145,7 +145,15 @@ describe("what is asked for", () => {
     const { status, stdout, stderr } = await command(["--help"]);
     expect([status, stderr]).toEqual([0, ""]);
     const [, commands = ""] = /Commands:\n([\s\S]*?)\n\n/.exec(stdout) ?? [];
-    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
+    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual([
+      "report",
+      "verify",
+      "compare",
+      "seal",
+      "demo",
+      "schema",
+      "help",
+    ]);
   });
 
   it("prints the help of a command", async () => {

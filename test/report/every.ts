@@ -4,6 +4,7 @@ import { adopt, keepControl, little, notSettled, several, undecidable } from "./
 import { farFromNormal } from "./drawn.ts";
 import { hostile } from "./hostile.ts";
 import { quantiles } from "./quantiles.ts";
+import { secondRun, thirdRun, undecidableRerun } from "./rerun-case.ts";
 
 /** Every hand-made report, by name. */
 export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])[] = [
@@ -17,4 +18,7 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["adjusted", adjustedCase],
   ["quantiles", quantiles],
   ["hostile", hostile],
+  ["a second run", secondRun],
+  ["a third run with another rule", thirdRun],
+  ["a rerun of which nothing can be decided", undecidableRerun],
 ];
