@@ -1,37 +1,28 @@
 /** The library entry: a plan in, a decision report out. */
-import { createHash } from "node:crypto";
 import { readFile } from "node:fs/promises";
 import path from "node:path";
-import { type Arm, arms } from "./cells/index.ts";
-import { checks as soundnessChecks } from "./checks/index.ts";
-import {
-  accruals as accrualsOf,
-  adjustedPairs,
-  effects as allEffects,
-  atThisLook,
-  conclusion as concluded,
-  contrastFigures,
-  otherChoices,
-  type Pair,
-  type SizeAnswer,
-  type SizeQuestion,
-  sizeAhead,
-  subgroups as subgroupsOf,
-  withOrderStatistics,
-} from "./decision/index.ts";
-import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
-import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { decisionReport, judged, measure } from "./compute.ts";
+import { type Progress, UnusableLog } from "./engine/index.ts";
+import { loadPlan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
-import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
-import { sizeText } from "./report/size.ts";
+import { type ReportJson, reportJsonSchema } from "./report/index.ts";
+import { replacedReport } from "./rerun.ts";
+import { rerunOf } from "./steps.ts";
 import { version } from "./version.ts";
 
-export type { Progress, ReportJson, SizeAnswer, SizeQuestion };
+export { type Compared, compareReports } from "./compare.ts";
+export type { SizeAnswer, SizeQuestion } from "./decision/index.ts";
+export { type Sealed, seal } from "./seal.ts";
+export { size } from "./size.ts";
+export { type Verified, type VerifyOptions, verify } from "./verify/verify.ts";
+export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };
 
 export interface CloseoutOptions {
   /** The report's folder; without it out/<experiment> in the current folder. */
   readonly out?: string | undefined;
+  /** The report.json of the report that this one replaces, or "none"; without it the one in the folder. */
+  readonly previous?: string | undefined;
   readonly threads?: number | undefined;
   /** As DuckDB writes sizes: "2GB". */
   readonly memory?: string | undefined;
@@ -49,14 +40,6 @@ export type Outcome =
       readonly files: readonly string[];
     }
   | { readonly status: 2 | 3; readonly text: string };
-
-/** The size of a test to come, with its text for a terminal; or what is wrong with the question. */
-export function size(
-  question: SizeQuestion,
-): (SizeAnswer & { readonly text: string }) | { readonly problems: readonly string[] } {
-  const answer = sizeAhead(question);
-  return "problems" in answer ? answer : { ...answer, text: sizeText(question, answer) };
-}
 
 /**
  * Reads a plan and its log, and writes the report's files.
@@ -76,20 +59,25 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   const folder = plan === null ? null : await openFolder(plan.experiment, options.out);
   if (folder !== null && "refused" in folder) return { status: 2, text: folder.refused };
   try {
-    const found = await withReduction(
-      plan,
-      loaded.source,
-      path.dirname(path.resolve(planPath)),
-      { ...options, rejectsTo: folder?.staged("rejects.csv") },
-      measured,
-    );
+    const planFolder = path.dirname(path.resolve(planPath));
+    const found = await measure(plan, loaded.source, planFolder, {
+      ...options,
+      rejectsTo: folder?.staged("rejects.csv"),
+    });
     if (plan === null || folder === null || "problems" in found) {
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const rendered = await decisionReport(planText, found);
+    const replaced = await replacedReport(folder, options.previous, plan.experiment, planText, found.reduction);
+    if ("refused" in replaced) return { status: 2, text: replaced.refused };
+    const judgement = judged(plan, found);
+    const rerun =
+      replaced.previous === null
+        ? null
+        : await rerunOf(replaced.previous, { plan, planText, planFolder, measured: found, judged: judgement }, options);
+    const rendered = await decisionReport(plan, planText, found, judgement, rerun);
     options.signal?.throwIfAborted();
-    const written = await folder.keep(rendered.files);
+    const written = await folder.keep(rendered.files, replaced.history);
     const terminal = rendered.terminal({
       report: path.join(folder.shown, "report.html"),
       summary: path.join(folder.shown, "summary.md"),
@@ -104,55 +92,4 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   } finally {
     await folder?.discard();
   }
-}
-
-/** All that the report is made from, of constant size. */
-interface Measured {
-  /** With how far the log reaches into its planned looks. */
-  readonly plan: Plan;
-  readonly reduction: Reduction;
-  /** Per metric, per variant, both in plan order. */
-  readonly arms: readonly (readonly Arm[])[];
-  /** The adjusted arms of metrics that the plan adjusts for a covariate. */
-  readonly pairs: readonly Pair[];
-}
-
-/** While the engine still holds the units: the arms, and what only the units can tell of them. */
-async function measured(planned: Plan, reduction: Reduction, session: Session): Promise<Measured> {
-  const plan = atThisLook(planned, reduction);
-  const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
-  const pairs = await adjustedPairs(plan, reduction, session.adjusted);
-  return { plan, reduction, arms, pairs };
-}
-
-function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
-  return plan.metrics.map((metric, m) => {
-    const cells = metrics[m];
-    if (cells === undefined) throw new Error(`no cells for metric ${metric.name}`);
-    return arms(metric, cells, plan.variants.length);
-  });
-}
-
-/** From counts, cells and arms to the report's files; no file is read or written but the templates. */
-function decisionReport(planText: string, { plan, reduction, arms, pairs }: Measured): Promise<ReportFiles> {
-  const effects = allEffects(plan, arms, reduction, pairs);
-  const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
-  const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
-  const choices = otherChoices(plan, reduction, arms, pairs, effects);
-  const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
-  const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
-  const planSha256 = createHash("sha256").update(planText).digest("hex");
-  return renderReport({
-    plan,
-    planText,
-    planSha256,
-    version,
-    reduction,
-    checks,
-    effects,
-    choices,
-    accruals,
-    subgroups,
-    conclusion,
-  });
 }

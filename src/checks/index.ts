@@ -23,6 +23,7 @@ import { weeks } from "./weeks.ts";
 import { withoutRows } from "./without-rows.ts";
 
 export { tailsInWords } from "./normality.ts";
+export { planChanged } from "./plan-changed.ts";
 export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";
 
 /** Every soundness check, in the order of METHODS 7. A check that does not apply gives null. */

@@ -1,13 +1,15 @@
 import { Command, CommanderError } from "commander";
-import type { CloseoutOptions } from "../index.ts";
+import { compare } from "./compare.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
-import { report } from "./report.ts";
+import { type ReportArguments, report } from "./report.ts";
 import { schema } from "./schema.ts";
+import { seal } from "./seal.ts";
 import { addSize } from "./size.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 import { unwritableText } from "./unwritable.ts";
 import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
+import { verify } from "./verify.ts";
 
 export interface Surroundings {
   readonly terminal: Terminal;
@@ -70,6 +72,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
     .usage("PLAN [options]")
     .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
+    .option("--previous <REPORT>", "the report.json to compare with, or none (default: the one in the report's folder)")
     .option("--threads <N>", "how many processor cores to use (default: all)")
     .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
     .option("--debug", "on a fault of closeout itself, print where it happened")
@@ -77,6 +80,47 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
       const read = readOptions(options, facts(program, "report"));
       end(await report({ plan, options: read }, terminal, await load(), signal));
     });
+
+  program
+    .command("verify")
+    .summary("prove that a report says what its log says")
+    .description(
+      "Makes a report anew from the plan inside it and from the log, and compares the two. Says what differs: a file of the log, a number, a sentence.",
+    )
+    .argument("REPORT", "the report.html, or the folder that it lies in")
+    .usage("REPORT [options]")
+    .option("--base <DIR>", "the folder that the plan lay in (default: looked for above the report)")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (file: string, options: RawOptions) => {
+      const { threads, memory } = readOptions(options, facts(program, "verify"));
+      end(await verify({ file, options: { base: options.base, threads, memory } }, terminal, await load(), signal));
+    });
+
+  program
+    .command("compare")
+    .summary("say what differs between two reports")
+    .description("Compares two reports of one experiment: plan, log, who was counted, estimates, checks, conclusion.")
+    .argument("OLD", "a report.json")
+    .argument("NEW", "another report.json")
+    .usage("OLD NEW [options]")
+    .option("--out <FILE>", "write it as a document, an HTML file, instead of to the terminal")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (before: string, after: string, options: RawOptions) => {
+      end(await compare({ before, after, out: options.out }, terminal, await load()));
+    });
+
+  program
+    .command("seal")
+    .summary("print the fingerprint of a plan's rule, to keep before the start")
+    .description(
+      "Prints the fingerprint of what decides: metrics, allocation, enrolment, follow-up and decision. Kept before the start, it proves later that the rule came first.",
+    )
+    .argument("PLAN", "the plan, a YAML file")
+    .usage("PLAN")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string) => end(await seal(plan, terminal, await load())));
 
   program
     .command("demo")
@@ -114,15 +158,17 @@ Examples:
 
 Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments
 are wrong, or a file or column that they name is not there; 3 the log cannot be
-used; 1 a fault of closeout itself.`;
+used; 4 verify: the report does not hold; 1 a fault of closeout itself.`;
 
 interface RawOptions {
   readonly out?: string;
+  readonly previous?: string;
+  readonly base?: string;
   readonly threads?: string;
   readonly memory?: string;
 }
 
-function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptions, "out" | "threads" | "memory"> {
+function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["options"] {
   const problems: string[] = [];
   if (raw.out?.trim() === "") problems.push("--out needs the name of a folder.");
   if (raw.threads !== undefined && !/^[1-9]\d{0,3}$/.test(raw.threads)) {
@@ -134,6 +180,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): Pick<CloseoutOptio
   if (problems.length > 0) throw wrongArguments(problems.join("\n"), command);
   return {
     ...(raw.out === undefined ? {} : { out: raw.out }),
+    ...(raw.previous === undefined ? {} : { previous: raw.previous }),
     ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
     ...(raw.memory === undefined ? {} : { memory: raw.memory }),
   };

@@ -1,5 +1,6 @@
 /** From a plan and its log to counts and cells. */
 
+export { isFile, logFiles } from "./files.ts";
 export { unitLineIds } from "./layout.ts";
 export { type Progress, type ReduceOptions, reduce, withReduction } from "./reduce.ts";
 export type { AdjustedRequest, Session } from "./session.ts";

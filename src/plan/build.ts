@@ -62,6 +62,14 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
       where: whereTests(where, ["incidents", i, "where"], source.yaml),
     })),
     forecast: plan.forecast === undefined ? null : { unitsPerMonth: plan.forecast["units-per-month"] },
+    registered:
+      plan.registered === undefined
+        ? null
+        : {
+            on: plan.registered.on,
+            where: plan.registered.where ?? null,
+            fingerprint: plan.registered.fingerprint,
+          },
     texts: {
       ended: plan.ended ?? null,
       owner: plan.owner ?? null,

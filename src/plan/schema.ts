@@ -11,6 +11,7 @@ import {
   text,
   where,
 } from "./schema-values.ts";
+import { SEAL } from "./seal.ts";
 
 /**
  * The plan as its YAML has it: the one source of truth. The types, the messages about a wrong key or value and
@@ -225,6 +226,17 @@ export const planSchema = z
         }),
       })
       .meta({ description: "What is expected of the time after the test." })
+      .optional(),
+    registered: z
+      .strictObject({
+        on: text("When the rule was kept."),
+        where: text("Where it was kept: a ticket, a repository.").optional(),
+        fingerprint: z.string().regex(SEAL).meta({
+          description: "What closeout seal printed for the plan of that day.",
+          expected: "the fingerprint that closeout seal prints",
+        }),
+      })
+      .meta({ description: "Proof that the rule came before the result; without effect on any number." })
       .optional(),
     owner: text("Who owns the experiment.").optional(),
     link: text("Where more is written.").optional(),

@@ -29,6 +29,8 @@ export interface Plan {
   readonly incidents: readonly Incident[];
   /** How many units are expected to enrol in a month, all variants together. */
   readonly forecast: { readonly unitsPerMonth: number } | null;
+  /** Where the rule was kept before the start, and its fingerprint (seal.ts). */
+  readonly registered: { readonly on: string; readonly where: string | null; readonly fingerprint: string } | null;
   readonly texts: PlanTexts;
   /**
    * Every column of the log that the plan names, other than as time, event or variant, in the order of first mention

@@ -6,9 +6,16 @@ import { summaryMd } from "./summary.ts";
 import { terminalText } from "./terminal.ts";
 import type { ReportFiles, ReportInputs } from "./types.ts";
 
+// reruns: the report that is replaced, and where it is kept
+export type { Rerun } from "./changes/changes.ts";
+export type { StepJson, StepsJson } from "./changes/types.ts";
+export { type ComparedReports, comparisonPage, comparisonText } from "./comparison.ts";
 // the report's parts, for tests and for whoever needs one alone
 export { effectsCsv } from "./csv.ts";
+export type { Kept } from "./folder.ts";
+export { fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
 export { reportJson } from "./json.ts";
+export { firstPlanOf, type PreviousReport, previousReport, runOf } from "./previous.ts";
 export { reportJsonSchema } from "./schema.ts";
 export { summaryMd } from "./summary.ts";
 export { terminalText } from "./terminal.ts";
@@ -18,7 +25,7 @@ export type { ReportFile, ReportFiles, ReportInputs, ReportJson, TerminalPaths }
 /** The report's files as text, and its text for a terminal. Writes nothing: whoever calls it owns the folder. */
 export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {
   const json = reportJson(inputs);
-  const html = renderPage(await page(inputs));
+  const html = renderPage(await page(inputs, json.changes));
   return {
     json,
     html,

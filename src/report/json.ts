@@ -3,6 +3,7 @@ import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
 import type { ByVariant } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import type { Contrast } from "../stats/types.ts";
+import { changesJson } from "./changes/changes.ts";
 import { twelveDigits } from "./digits.ts";
 import { accrualJson, subgroupJson } from "./groups-json.ts";
 import { rowLine, unitLine } from "./ledger.ts";
@@ -10,7 +11,7 @@ import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson, Sensiti
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
 export function reportJson(inputs: ReportInputs): ReportJson {
-  const { plan, reduction, conclusion } = inputs;
+  const { plan, reduction, conclusion, rerun } = inputs;
   const report: ReportJson = {
     format: 1,
     experiment: plan.experiment,
@@ -35,7 +36,8 @@ export function reportJson(inputs: ReportInputs): ReportJson {
       engine: { name: reduction.engine.name, version: reduction.engine.version },
     },
   };
-  return twelveDigits(report);
+  const rounded = twelveDigits(report);
+  return rerun === undefined ? rounded : { ...rounded, changes: twelveDigits(changesJson(rerun, rounded)) };
 }
 
 function flowJson({ plan, reduction }: ReportInputs): FlowJson {

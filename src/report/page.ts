@@ -1,5 +1,7 @@
+import type { ChangesJson } from "./changes/types.ts";
 import { controlOf, whenText } from "./plan-words.ts";
 import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
+import { type ChangesSection, changesSection } from "./sections/changes.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
@@ -8,6 +10,7 @@ import { type IncidentText, incidentTexts } from "./sections/incidents.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type RerunLines, rerunLines } from "./sections/rerun.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
@@ -25,6 +28,9 @@ export interface Page {
   readonly confidence: string;
   readonly contents: readonly { readonly number: number; readonly id: string; readonly title: string }[];
   readonly decision: DecisionSection;
+  /** Null in a first report. */
+  readonly rerun: RerunLines | null;
+  readonly changes: ChangesSection | null;
   readonly checks: ChecksSection;
   /** The end of section 3. */
   readonly incidents: readonly IncidentText[];
@@ -46,6 +52,7 @@ export interface FurtherOnMetric {
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
 const CONTENTS = [
   { number: 1, id: "decision", title: "Decision" },
+  { number: 2, id: "changes", title: "What changed" },
   { number: 3, id: "trust", title: "Can the data be trusted?" },
   { number: 4, id: "counted", title: "Who was counted" },
   { number: 5, id: "metrics", title: "Each measure" },
@@ -53,7 +60,7 @@ const CONTENTS = [
   { number: 7, id: "methods", title: "Methods, sources, cautions" },
 ] as const;
 
-export async function page(inputs: ReportInputs): Promise<Page> {
+export async function page(inputs: ReportInputs, changes: ChangesJson | null = null): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
@@ -69,8 +76,10 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     undecidable: conclusion.decision === "undecidable",
     control: controlOf(plan).name,
     confidence: `${Number((plan.decision.confidence * 100).toPrecision(12))}%`,
-    contents: CONTENTS,
+    contents: CONTENTS.filter(({ number }) => number !== 2 || changes !== null),
     decision: await decisionSection(inputs),
+    rerun: changes === null ? null : rerunLines(changes, plan),
+    changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
     incidents: incidentTexts(inputs),
     counted: countedSection(plan, reduction),

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { changesSchema } from "./changes/schema.ts";
 
 const outcome = z.enum(["pass", "caution", "fail"]);
 const figure: z.ZodType = z.lazy(() =>
@@ -196,7 +197,7 @@ export const reportSchema = z.strictObject({
       }),
     )
     .describe("Each contrast under other reasonable choices. agrees: it stands where the plan's own choice puts it."),
-  changes: z.null(),
+  changes: changesSchema,
   provenance: z.strictObject({
     version: z.string(),
     plan: z.strictObject({ sha256: fingerprint, text: z.string() }),

@@ -13,6 +13,8 @@ import type {
 import type { Level, Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
+import type { Rerun } from "./changes/changes.ts";
+import type { ChangesJson } from "./changes/types.ts";
 
 /** report.json: the contract of DESIGN 7. Numbers carry 12 significant digits; what does not exist is null. */
 export interface ReportJson {
@@ -30,7 +32,7 @@ export interface ReportJson {
   readonly subgroups: readonly SubgroupJson[];
   readonly accrual: readonly AccrualJson[];
   readonly sensitivity: readonly SensitivityJson[];
-  readonly changes: null;
+  readonly changes: ChangesJson | null;
   readonly provenance: ProvenanceJson;
 }
 
@@ -185,6 +187,8 @@ export interface ReportInputs {
   readonly accruals: readonly Accrual[];
   readonly subgroups: readonly Subgroup[];
   readonly conclusion: Conclusion;
+  /** Of a report that replaces an earlier one. */
+  readonly rerun?: Rerun | undefined;
 }
 
 export interface ReportFiles {

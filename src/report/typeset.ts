@@ -6,17 +6,21 @@ import type { Page } from "./page.ts";
  */
 export function typeset(page: Page): Page {
   const { planText } = page.methods;
-  const set = everyText(page) as Page;
-  return { ...set, methods: { ...set.methods, planText } };
+  const all = everyText(page);
+  return { ...all, methods: { ...all.methods, planText } };
 }
 
-function everyText(value: unknown): unknown {
+export function everyText<T>(value: T): T {
+  return set(value) as T;
+}
+
+function set(value: unknown): unknown {
   if (typeof value === "string") return quotes(unbroken(withoutControls(value)));
-  if (Array.isArray(value)) return value.map(everyText);
+  if (Array.isArray(value)) return value.map(set);
   if (typeof value !== "object" || value === null) return value;
   // a drawing is markup of our own, not a text
   if ("svg" in value) return value;
-  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, everyText(item)]));
+  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, set(item)]));
 }
 
 /**

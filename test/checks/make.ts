@@ -33,6 +33,7 @@ export function planOf(changes: Partial<Plan> = {}): Plan {
     looks: null,
     incidents: [],
     forecast: null,
+    registered: null,
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
     columns: [],
     numericColumns: [],

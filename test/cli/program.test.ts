@@ -37,6 +37,15 @@ async function command(argv: string[], outcome: Outcome | Error = DONE, signal =
       if (outcome instanceof Error) throw outcome;
       return outcome;
     },
+    verify: async (file, options = {}) => {
+      asked.push({ plan: file, options });
+      return { status: 4, text: `${file} does not hold` };
+    },
+    seal: async (plan) => ({ status: 0, text: `seal of ${plan}` }),
+    compareReports: async (before, after, options = {}) => ({
+      status: 0,
+      text: `${before} against ${after}, ${options.out ?? "here"}`,
+    }),
     planJsonSchema: () => ({ title: "plan" }),
     reportJsonSchema: () => ({ title: "report" }),
     size,
@@ -139,6 +148,9 @@ describe("what is asked for", () => {
     const [, commands = ""] = /Commands:\n([\s\S]*?)\n\n/.exec(stdout) ?? [];
     expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual([
       "report",
+      "verify",
+      "compare",
+      "seal",
       "demo",
       "size",
       "schema",
@@ -225,5 +237,30 @@ describe("the terminal", () => {
       "reading rows  1,204,000 rows  99%",
     );
     expect(progressText({ stage: "cells", rows: 0, share: null })).toBe("cells");
+  });
+});
+
+describe("the other commands", () => {
+  it("verify hands over the report and where its log lies, prints the verdict to stdout, and ends with 4 where it does not hold", async () => {
+    const { status, stdout, stderr, asked } = await command(["verify", "r.html", "--base", "there", "--threads", "2"]);
+    expect([status, stdout, stderr]).toEqual([4, "r.html does not hold", ""]);
+    expect(asked[0]).toMatchObject({ plan: "r.html", options: { base: "there", threads: 2 } });
+  });
+
+  it("seal prints what the library says of the plan", async () => {
+    expect(await command(["seal", "a.yaml"])).toMatchObject({ status: 0, stdout: "seal of a.yaml" });
+  });
+
+  it("compare takes two reports, and a file for the document", async () => {
+    expect((await command(["compare", "a.json", "b.json"])).stdout).toBe("a.json against b.json, here");
+    expect((await command(["compare", "a.json", "b.json", "--out", "c.html"])).stdout).toBe(
+      "a.json against b.json, c.html",
+    );
+    expect((await command(["compare", "a.json"])).status).toBe(2);
+  });
+
+  it("report hands over the report to compare with", async () => {
+    const { asked } = await command(["report", "a.yaml", "--previous", "old.json"]);
+    expect(asked[0]?.options).toMatchObject({ previous: "old.json" });
   });
 });

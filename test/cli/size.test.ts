@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { run } from "../../src/cli/program.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
-import { closeout, planJsonSchema, reportJsonSchema, size } from "../../src/index.ts";
+import * as library from "../../src/index.ts";
 import { loadPlan } from "../../src/plan/index.ts";
 import { planText } from "../plan/plans.ts";
 
@@ -15,7 +15,7 @@ async function command(line: string) {
     bold: (text) => text,
     dim: (text) => text,
   };
-  const load = async () => ({ closeout, planJsonSchema, reportJsonSchema, size });
+  const load = async () => library;
   const signal = new AbortController().signal;
   const status = await run(["size", ...line.split(" ")], { terminal, load, signal, version: "1.2.3" });
   return { status, stdout: stdout.join("\n"), stderr: stderr.join("\n") };

@@ -74,6 +74,7 @@ export function planFromYaml(text: string): Plan {
       where: whereOf(at(node, "where")),
     })),
     forecast: null,
+    registered: null,
     texts: { ended: textAt(root, "ended"), owner: null, link: null, limits: null, notes: null, decided: null },
     ...namedColumns(root),
   };

@@ -111,6 +111,7 @@ describe("a plan", () => {
       looks: null,
       incidents: [],
       forecast: null,
+      registered: null,
       texts: {
         ended: "the planned two weeks were over",
         owner: "search team",
@@ -166,6 +167,7 @@ describe("a plan", () => {
       looks: null,
       incidents: [],
       forecast: null,
+      registered: null,
       texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
       columns: ["visitor"],
       numericColumns: [],

@@ -303,6 +303,7 @@ export const little = inputs({
     looks: null,
     incidents: [],
     metrics: [booked, contacts, { ...fare, cap: null, worthwhile: null, role: "primary" }, perSearch],
+    registered: null,
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
   },
   flow: { analysed: [1, 0], byFilter: [], followUp: [0, 0], notEnrolled: 0, outside: [0, 0], unknown: 0 },

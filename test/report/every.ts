@@ -5,6 +5,7 @@ import { farFromNormal } from "./drawn.ts";
 import { hostile } from "./hostile.ts";
 import { atALook, meanwhile } from "./meanwhile.ts";
 import { quantiles } from "./quantiles.ts";
+import { secondRun, thirdRun, undecidableRerun } from "./rerun-case.ts";
 
 /** Every hand-made report, by name. */
 export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])[] = [
@@ -20,4 +21,7 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["incidents", meanwhile],
   ["an interim look", atALook],
   ["hostile", hostile],
+  ["a second run", secondRun],
+  ["a third run with another rule", thirdRun],
+  ["a rerun of which nothing can be decided", undecidableRerun],
 ];

@@ -136,6 +136,7 @@ export const farePlan: Plan = {
   looks: null,
   incidents: [],
   forecast: null,
+  registered: null,
   texts: {
     ended: "the planned two weeks were over",
     owner: "search team",

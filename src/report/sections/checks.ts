@@ -75,7 +75,7 @@ export function tallyText(checks: readonly Check[]): string {
 function checkText(check: Check): CheckText {
   return {
     id: check.id,
-    title: TITLES[check.id] ?? capital(check.id.replaceAll("-", " ")),
+    title: titleOf(check.id),
     outcome: outcomeText(check.result, check.strong),
     sentence: check.sentence,
     remedy: check.remedy,
@@ -85,6 +85,11 @@ function checkText(check: Check): CheckText {
       .map(({ about, result, sentence }) => ({ about, outcome: outcomeText(result, false), sentence })),
     figures: figureTexts([...Object.entries(check.figures)], ""),
   };
+}
+
+/** The name of a check for the reader. */
+export function titleOf(id: string): string {
+  return TITLES[id] ?? capital(id.replaceAll("-", " "));
 }
 
 function outcomeText(result: CheckOutcome, strong: boolean): string {

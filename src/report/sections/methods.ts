@@ -1,7 +1,8 @@
 import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
 import type { InputFile, Reduction } from "../../engine/types.ts";
-import type { Plan } from "../../plan/types.ts";
+import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
 import { count, list, planPercent } from "../../words/index.ts";
+import { REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
 import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
@@ -30,12 +31,13 @@ export function methodsSection({
   reduction,
   effects,
   choices,
+  rerun,
 }: ReportInputs): MethodsSection {
   return {
     methods: methods(plan, effects, choices),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
-    facts: facts(plan, planSha256, version, reduction),
+    facts: facts(plan, planSha256, version, reduction, rerun),
     cautions: cautions(plan),
     planText,
   };
@@ -45,7 +47,7 @@ function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
   return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
 }
 
-function facts(plan: Plan, planSha256: string, version: string, { engine }: Reduction) {
+function facts(plan: Plan, planSha256: string, version: string, { engine }: Reduction, rerun: ReportInputs["rerun"]) {
   const { owner, link, ended, notes, decided } = plan.texts;
   const decision =
     decided === null
@@ -55,6 +57,8 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
           .join(", ");
   const known: readonly (readonly [string, string | null])[] = [
     ["Plan, SHA-256", planSha256],
+    [REPLACES, rerun?.previous.sha256 ?? null],
+    ["The rule, kept before the start", registeredText(plan)],
     ["closeout", version],
     ["Engine", `${engine.name} ${engine.version}`],
     ["Days and times", plan.timezone],
@@ -65,6 +69,16 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
     ["Notes", notes],
   ];
   return known.flatMap(([name, value]) => (value === null || value === "" ? [] : [{ name, value }]));
+}
+
+/** Whether the rule is the one that was kept before the start; null where none was. */
+function registeredText(plan: Plan): string | null {
+  if (plan.registered === null) return null;
+  const { on, where, fingerprint } = plan.registered;
+  const kept = `${on}${where === null ? "" : `, ${where}`}: ${fingerprint}`;
+  const own = sealOf(plan).fingerprint;
+  const differ = sealDifference(fingerprint, own);
+  return differ.length === 0 ? `${kept}; unchanged since` : `${kept}; now ${own}, another in: ${list(differ)}`;
 }
 
 /** Only what this report uses. */
