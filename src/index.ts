@@ -4,6 +4,7 @@ import path from "node:path";
 import { decisionReport, judged, measure } from "./compute.ts";
 import { type Progress, UnusableLog } from "./engine/index.ts";
 import { loadPlan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportJson, reportJsonSchema } from "./report/index.ts";
 import { replacedReport } from "./rerun.ts";
@@ -24,6 +25,8 @@ export interface CloseoutOptions {
   /** The report.json of the report that this one replaces, or "none"; without it the one in the folder. */
   readonly previous?: string | undefined;
   readonly threads?: number | undefined;
+  /** Writes figures/*.svg, page-one.html and decision.csv too. */
+  readonly figures?: boolean | undefined;
   /** As DuckDB writes sizes: "2GB". */
   readonly memory?: string | undefined;
   readonly progress?: ((progress: Progress) => void) | undefined;
@@ -77,7 +80,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
         : await rerunOf(replaced.previous, { plan, planText, planFolder, measured: found, judged: judgement }, options);
     const rendered = await decisionReport(plan, planText, found, judgement, rerun);
     options.signal?.throwIfAborted();
-    const written = await folder.keep(rendered.files, replaced.history);
+    const kept = await folder.keep(rendered.files, replaced.history);
+    const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
     const terminal = rendered.terminal({
       report: path.join(folder.shown, "report.html"),
       summary: path.join(folder.shown, "summary.md"),

@@ -11,7 +11,8 @@ export { accumulated, type GroupSums, groupArms, groupCovariates, groupSums } fr
 // Adjusted contrasts
 export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
 export { sumsOfSquares } from "./pair-ratio.ts";
+// how an arm's values lie
+export { type Bin, beyond, type Shape, shape } from "./shape.ts";
 export { NANO, nanoOf } from "./sums.ts";
-
 // Types
 export type { Arm, BucketSums, CovariateArm, JointSums, PairSums, PowerSums } from "./types.ts";

@@ -22,6 +22,7 @@ import { unknownVariants } from "./unknown-variants.ts";
 import { weeks } from "./weeks.ts";
 import { withoutRows } from "./without-rows.ts";
 
+export { covariates } from "./balance.ts";
 export { tailsInWords } from "./normality.ts";
 export { planChanged } from "./plan-changed.ts";
 export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";

@@ -73,6 +73,10 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .usage("PLAN [options]")
     .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
     .option("--previous <REPORT>", "the report.json to compare with, or none (default: the one in the report's folder)")
+    .option(
+      "--figures",
+      "also write each figure as SVG, page one alone, and decision.csv, a line for a log of decisions",
+    )
     .option("--threads <N>", "how many processor cores to use (default: all)")
     .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
     .option("--debug", "on a fault of closeout itself, print where it happened")
@@ -166,6 +170,7 @@ interface RawOptions {
   readonly base?: string;
   readonly threads?: string;
   readonly memory?: string;
+  readonly figures?: boolean;
 }
 
 function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["options"] {
@@ -183,6 +188,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["o
     ...(raw.previous === undefined ? {} : { previous: raw.previous }),
     ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
     ...(raw.memory === undefined ? {} : { memory: raw.memory }),
+    ...(raw.figures === undefined ? {} : { figures: raw.figures }),
   };
 }
 

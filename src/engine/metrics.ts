@@ -6,6 +6,7 @@ import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
 import type { MeasuredMetric } from "./measuredMetric.ts";
 import { scoreTables } from "./scores.ts";
+import { sizeTables } from "./sizes.ts";
 import { capped, countedRows, type Dialect, EACH_BUCKET, leftOut, name, type Statement, sql } from "./sql/index.ts";
 import { type DecimalMeasure, decimalMeasures, groupedJointTables, groupedTables } from "./tables.ts";
 import type { CellTable, GroupCells, JointTable, MetricCells, MetricGroups } from "./types.ts";
@@ -101,6 +102,12 @@ export async function metricCells(
       dialect,
     ),
   );
+  const shaped = plan.metrics.flatMap(({ summary }, m) => (summary === "proportion" ? [] : [m]));
+  const sizes = await sizeTables(
+    shaped.map((m) => values[m]?.value ?? sql`NULL`),
+    engine,
+    dialect,
+  );
   const [rows = {}] = await engine.query(countedRows(plan.metrics.length));
 
   const groups = plan.metrics.map((metric, m) => {
@@ -126,6 +133,7 @@ export async function metricCells(
       of: tableOf(tables, m),
       ratio: hasPartner && score !== undefined ? { per: x, score, joint } : null,
       covariate: hasPartner && metric.adjustFor !== null ? { x, joint } : null,
+      sizes: sizes[shaped.indexOf(m)] ?? null,
       choices: choices[m] ?? [],
       ends: ends[m] ?? [],
     };

@@ -102,6 +102,8 @@ export interface MetricCells {
   readonly ratio: { readonly per: CellTable; readonly score: ScoreTable; readonly joint: JointTable } | null;
   /** x of the adjusted contrast, over the units that have one and a value; joint sums of (value, x) over the same. */
   readonly covariate: { readonly x: CellTable; readonly joint: JointTable } | null;
+  /** Units by the size of their value, after the cap, of a ratio the numerator's; null for a share, which has two values. */
+  readonly sizes: SizeTable | null;
   /** The same metric under other reasonable choices (METHODS 6), as far as they differ from the plan's. */
   readonly choices: readonly ChoiceCells[];
   /**
@@ -157,6 +159,19 @@ export type OtherCells =
 export type ChoiceCells =
   | { readonly choice: OtherCells; readonly of: CellTable; readonly joint: JointTable | null }
   | { readonly choice: "log"; readonly logged: ScoreTable };
+
+/**
+ * Units per variant, sign and size of a value: columns of equal length, a row where there is a unit. Exact counts, and
+ * as many rows as the values have sizes, whatever the number of units.
+ */
+export interface SizeTable {
+  readonly variant: readonly number[];
+  /** -1, 0, 1. */
+  readonly sign: readonly number[];
+  /** 4 k + j with 2^k (1 + j / 4) <= |x| < 2^k (1 + (j + 1) / 4), j in 0..3, of the double nearest to x; null for 0. */
+  readonly quarter: readonly (number | null)[];
+  readonly units: readonly number[];
+}
 
 /** In 10^-9 of the unit of each; x is null where there is none. */
 export interface UnitEnds {

@@ -196,11 +196,18 @@ export interface ReportFiles {
   readonly html: string;
   /** What is written into the report's folder. */
   readonly files: readonly ReportFile[];
+  /** Made only when they are asked for: every figure as a file, page one alone, one line for a log of decisions. */
+  readonly extras: () => readonly ExtraFile[];
   /** The conclusion and a short table for stdout, plain lines without colour. */
   readonly terminal: (paths: TerminalPaths) => string;
 }
 export interface ReportFile {
   readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md";
+  readonly text: string;
+}
+/** `figures/….svg`, `page-one.html`, `decision.csv`. */
+export interface ExtraFile {
+  readonly name: string;
   readonly text: string;
 }
 /** Where the reader finds the files, as the terminal is to print it. */

@@ -201,6 +201,7 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
     of,
     ratio: null,
     covariate: null,
+    sizes: null,
     choices: [],
     ends: [],
   };

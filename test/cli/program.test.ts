@@ -70,6 +70,11 @@ describe("closeout report", () => {
     expect(asked[0]).toMatchObject({ plan: "a.yaml", options: { out: "x", threads: 2, memory: "4GB" } });
   });
 
+  it("asks for the figures as files only when told to", async () => {
+    const { asked } = await command(["report", "a.yaml", "--figures"]);
+    expect(asked[0]?.options).toMatchObject({ figures: true });
+  });
+
   it("leaves to the library what was not given", async () => {
     const { asked } = await command(["report", "a.yaml"]);
     expect(Object.keys(asked[0]?.options ?? {}).sort()).toEqual(["progress", "signal"]);

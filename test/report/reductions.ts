@@ -1,4 +1,4 @@
-import type { CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
+import type { CellTable, MetricCells, Reduction, SizeTable } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { soundnessOf } from "../checks/make.ts";
 
@@ -129,7 +129,24 @@ function cellsOf(name: string, plan: Plan): MetricCells {
     of: noCells,
     ratio: null,
     covariate: null,
+    sizes: metric === undefined || metric.summary === "proportion" ? null : sizesOf(plan),
     choices: [],
     ends: [],
+  };
+}
+
+/** Most at 0, the others about 200, one arm with a long tail and one value below 0. */
+function sizesOf({ variants }: Plan): SizeTable {
+  const rows = variants.flatMap((_, v) => [
+    ...(v === 0 ? [] : [{ variant: v, sign: -1, quarter: 14, units: 3 }]),
+    { variant: v, sign: 0, quarter: null, units: 43_800 - 300 * v },
+    ...[26, 27, 28, 29, 30, 31, 32].map((quarter, i) => ({ variant: v, sign: 1, quarter, units: 800 + 40 * i + v })),
+    ...(v === 1 ? [{ variant: v, sign: 1, quarter: 51, units: 1 }] : []),
+  ]);
+  return {
+    variant: rows.map(({ variant }) => variant),
+    sign: rows.map(({ sign }) => sign),
+    quarter: rows.map(({ quarter }) => quarter),
+    units: rows.map(({ units }) => units),
   };
 }

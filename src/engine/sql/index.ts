@@ -15,6 +15,7 @@ export { atRanks, ordered } from "./ordered.ts";
 export { brokenQuotes, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export * from "./sinceEnrolment.ts";
+export { sizes } from "./sizes.ts";
 export * from "./soundness.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";

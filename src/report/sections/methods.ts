@@ -9,12 +9,19 @@ import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
 export interface MethodsSection {
-  readonly methods: readonly { readonly name: string; readonly how: string; readonly source: string }[];
+  readonly methods: readonly Method[];
   readonly files: readonly FileText[];
   readonly lists: readonly FileText[];
   readonly facts: readonly { readonly name: string; readonly value: string }[];
   readonly cautions: readonly string[];
   readonly planText: string;
+}
+export interface Method {
+  /** What a term of the report links to. */
+  readonly id: string;
+  readonly name: string;
+  readonly how: string;
+  readonly source: string;
 }
 export interface FileText {
   readonly name: string;
@@ -34,7 +41,7 @@ export function methodsSection({
   rerun,
 }: ReportInputs): MethodsSection {
   return {
-    methods: methods(plan, effects, choices),
+    methods: methods(plan, effects, choices, reduction),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
     facts: facts(plan, planSha256, version, reduction, rerun),
@@ -82,7 +89,12 @@ function registeredText(plan: Plan): string | null {
 }
 
 /** Only what this report uses. */
-function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choices[]): MethodsSection["methods"] {
+function methods(
+  plan: Plan,
+  effects: readonly Effect[],
+  choices: readonly Choices[],
+  reduction: Reduction,
+): MethodsSection["methods"] {
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -97,7 +109,7 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
   const simply = effects.some(
     ({ role, contrast, summary }) => role !== "secondary" && (summary === "quantile" || hasNoSpread(contrast)),
   );
-  const all: readonly (MethodsSection["methods"][number] & { readonly when: boolean })[] = [
+  const all: readonly (Omit<Method, "id"> & { readonly when: boolean })[] = [
     {
       when: [...used].some((method) => method !== "quantile"),
       name: "Difference",
@@ -198,13 +210,30 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
         "ICH E9(R1), sensitivity analysis; Campbell, Pennello and Yue 2011, Journal of Biopharmaceutical Statistics 21, 180-195, tipping point",
     },
     {
+      when: reduction.metrics.some(({ sizes }) => sizes !== null),
+      name: "Values by size",
+      how: `How many ${many} have a value in each of four steps to every doubling, exact counts, zero apart. Drawn over the width of the step, so that equal areas are equal numbers; the tails add them up from the far end.`,
+      source: "Pareto 1896, on the tail on scales of ratios; the steps are this tool\u2019s",
+    },
+    {
+      when: reduction.metrics.some(({ covariate }) => covariate !== null),
+      name: "Groups before enrolment",
+      how: "The standardised difference: of the means, over the root of the mean of both variances. It tells whether groups are alike enough and does not grow with their size; the check of section 3 tells whether chance made it.",
+      source: "Austin 2009, Statistics in Medicine 28, 3083-3107; CONSORT 2010 item 15",
+    },
+    {
       when: true,
       name: "Who was counted",
       how: `Each row and each ${plan.unitCalled.one} ends on one line of section 4. A ${plan.unitCalled.one} is counted in the group of its first enrolment, whatever it did later; one without events counts with 0.`,
       source: "CONSORT 2010 flow diagram; ICH E9(R1)",
     },
   ];
-  return all.filter(({ when }) => when).map(({ name, how, source }) => ({ name, how, source }));
+  return all.filter(({ when }) => when).map(({ name, how, source }) => ({ id: idOf(name), name, how, source }));
+}
+
+/** "Relative difference" is `method-relative-difference`. */
+function idOf(name: string): string {
+  return `method-${name.toLowerCase().replace(/[^a-z]+/g, "-")}`;
 }
 
 function hasNoSpread({ control, variant }: Effect["contrast"]): boolean {
