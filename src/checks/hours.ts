@@ -1,5 +1,7 @@
 import type { HourOfLog } from "../engine/soundnessTypes.ts";
+import type { ByVariant } from "../engine/types.ts";
 import { dateText, dayOfEpoch } from "../words/index.ts";
+import { added } from "./flow.ts";
 
 /** Places in a list of hours, both inclusive. */
 export interface HourRun {
@@ -20,27 +22,50 @@ const WEEK = 7;
  * an hour that is quiet every week is no gap.
  */
 export function gapsOf(hours: readonly HourOfLog[]): HourRun[] {
-  const rows = new Map<number, number>();
-  // the hour that the clock shows twice in autumn holds the rows of both
-  for (const hour of hours) rows.set(placeOf(hour), (rows.get(placeOf(hour)) ?? 0) + hour.rows);
-  const ends = [hours[0], hours.at(-1)].map((hour) => (hour === undefined ? 0 : placeOf(hour)));
+  const others = sameHours(hours);
   return emptyRuns(hours).filter((run) => {
-    const places = hours.slice(run.first, run.last + 1).map(placeOf);
-    const days = Math.ceil(places.length / 24);
-    const weeks = Math.ceil(days / WEEK) * WEEK;
-    const around = (shift: number) =>
-      [-shift, shift]
-        .map((away) => places.map((place) => place + away * 24))
-        .filter((moved) => (moved[0] ?? 0) >= (ends[0] ?? 0) && (moved.at(-1) ?? 0) <= (ends[1] ?? 0))
-        .map((moved) => moved.reduce((total, place) => total + (rows.get(place) ?? 0), 0));
-    const ofWeeks = around(weeks);
-    const others = ofWeeks.length > 0 ? ofWeeks : around(days);
-    return others.length > 0 && others.every((total) => total >= ROWS_AT_LEAST);
+    const rows = others(run).map((same) => same.reduce((total, hour) => total + hour.rows, 0));
+    return rows.length > 0 && rows.every((total) => total >= ROWS_AT_LEAST);
   });
 }
 
+/**
+ * Rows by variant of hours that should be like those of a run: the same by the clock in other weeks or days, and a day before
+ * and after it. Without any of the first kind, one list of no rows.
+ */
+export function hoursLike(hours: readonly HourOfLog[], run: HourRun): ByVariant[] {
+  const same = sameHours(hours)(run).map((own) => added(own.map(({ byVariant }) => byVariant)));
+  const around = [
+    ...hours.slice(Math.max(0, run.first - DAY), run.first),
+    ...hours.slice(run.last + 1, run.last + 1 + DAY),
+  ];
+  return same.length === 0 ? [[]] : [...same, added(around.map(({ byVariant }) => byVariant))];
+}
+
+const DAY = 24;
+
+/** The hours that show the same on the clock as those of a run, a week before and one after it, or days before and after. */
+function sameHours(hours: readonly HourOfLog[]): (run: HourRun) => HourOfLog[][] {
+  const byPlace = new Map<number, HourOfLog[]>();
+  // the hour that the clock shows twice in autumn is both
+  for (const hour of hours) byPlace.set(placeOf(hour), [...(byPlace.get(placeOf(hour)) ?? []), hour]);
+  const [start = 0, end = 0] = [hours[0], hours.at(-1)].map((hour) => (hour === undefined ? 0 : placeOf(hour)));
+  return (run) => {
+    const places = hours.slice(run.first, run.last + 1).map(placeOf);
+    const days = Math.ceil(places.length / DAY);
+    const weeks = Math.ceil(days / WEEK) * WEEK;
+    const away = (shift: number) =>
+      [-shift, shift]
+        .map((by) => places.map((place) => place + by * DAY))
+        .filter((moved) => (moved[0] ?? 0) >= start && (moved.at(-1) ?? 0) <= end)
+        .map((moved) => moved.flatMap((place) => byPlace.get(place) ?? []));
+    const ofWeeks = away(weeks);
+    return ofWeeks.length > 0 ? ofWeeks : away(days);
+  };
+}
+
 /** Hours of the clock since 1970-01-01. */
-const placeOf = ({ day, hour }: HourOfLog): number => day * 24 + hour;
+const placeOf = ({ day, hour }: HourOfLog): number => day * DAY + hour;
 
 function emptyRuns(hours: readonly HourOfLog[]): HourRun[] {
   const runs: { first: number; last: number }[] = [];

@@ -202,13 +202,10 @@ async function hours(
     const [first, last] = [hourOf(span.firstUs), hourOf(span.lastUs)];
     const isWithin = ({ source, hour }: HourCount) => source === span.source && hour >= first && hour <= last;
     const own = arms.filter(isWithin);
-    const rowsOf = (variant: number) =>
-      own.filter((one) => one.variant === variant).reduce((sum, { rows }) => sum + rows, 0);
     const source: SourceHours = {
       source: span.source,
       outside: span.outside,
-      byVariant: plan.variants.map((_, variant) => rowsOf(variant)),
-      hours: hoursOfSpan(all.filter(isWithin), first, last, clock),
+      hours: hoursOfSpan(all.filter(isWithin), own, plan.variants.length, first, last, clock),
     };
     return { source, first, own, runs: silentRuns(own) };
   });

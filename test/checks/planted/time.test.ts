@@ -58,7 +58,7 @@ describe("planted hours without rows", () => {
     ]);
   });
 
-  // (1 - s)^n times 336 hours and 2 arms, s = 1675 / (3350 + n): 16 0.0111, 17 0.0056, 19 0.0014, 20 0.00071
+  // (1 - s)^n times 336 hours and 2 arms, s = 1675 / (3350 + n), the smallest share: 16 0.0111, 17 0.0056, 19 0.0014, 20 0.00071
   it.each([
     [16, "pass"],
     [17, "caution"],
@@ -72,19 +72,45 @@ describe("planted hours without rows", () => {
     expect(conclusion.decision === "undecidable").toBe(result === "fail");
     if (result !== "pass") {
       expect(found?.sentence).toContain(
-        `"list" has no row on 6 March 2026 from 4:00 to 5:00, while ${n} visitors of the other groups have.`,
+        `"list" has no row on 6 March 2026 from 4:00 to 5:00, while ${n} visitors of the other group have.`,
       );
     }
+  });
+
+  it("of one variant that was shown a day late fail, and name the day", async () => {
+    const rows = [...hourly("list", 5), ...hourly("calendar", 5).filter(({ at }) => at > "2026-03-03")];
+    const { find, conclusion } = await judged(planText(), { rows });
+    expect(find("gaps")?.sentence).toContain(
+      '"calendar" has no row on 2 March 2026 from 0:00 to 24:00, while 120 visitors',
+    );
+    expect(conclusion.decision).toBe("undecidable");
   });
 
   it("of one variant count visitors, not rows: a busy one is one", async () => {
     const busy = Array.from({ length: 200 }, (_, i) => ({
       visitor: "calendar 99 0",
       at: timeText(100 * HOUR + i),
-      event: "page",
+      event: "open",
+      arm: "calendar",
     }));
     const rows = [...hourly("list", 5, { 100: 0 }), ...hourly("calendar", 5, { 100: 10 }), ...busy];
     expect((await judged(planText(), { rows })).find("gaps")?.result).toBe("pass");
+  });
+
+  it("of one variant are not those in which the other has a busier hour for once, or always", async () => {
+    const rows = [...hourly("list", 5), ...hourly("calendar", 5)].filter(({ at }) => at < "2026-03-09");
+    const booked = (arm: string, days: number, n: number) =>
+      Array.from({ length: days * n }, (_, i) => ({
+        visitor: `${arm} ${i % 160} ${i % 5}`,
+        at: timeText((8 + Math.floor(i / n)) * DAY + 10 * HOUR + i),
+        event: "booking",
+      }));
+    // in the second week nothing is left but bookings at ten, 60 a day of the calendar and none of the list but on the last
+    const late = [
+      ...booked("calendar", 6, 60),
+      ...booked("list", 1, 2).map((row) => ({ ...row, at: timeText(13 * DAY + 10 * HOUR) })),
+    ];
+    expect((await judged(planText(), { rows: [...rows, ...late] })).find("gaps")?.parts[1]?.result).toBe("pass");
   });
 
   it("are not looked for by variant where an entry knows one variant only", async () => {
