@@ -15,12 +15,12 @@ function hourly(arm: string, n: number, at: Readonly<Record<number, number>> = {
 }
 
 describe("planted hours without rows", () => {
-  // 6 March, 04:00 is hour 100; a week later is hour 268, the week before lies outside the log.
+  // 6 March, 04:00 is hour 100; a week later is hour 268, the week before lies outside the log; all other hours have 20.
   it.each([
     [19, "pass"],
     [20, "caution"],
   ])("of which the same hour a week later has %i rows are a %s", async (rows, result) => {
-    const log = [...hourly("list", 8, { 100: 0, 268: rows - 9 }), ...hourly("calendar", 8, { 100: 0, 268: 9 })];
+    const log = [...hourly("list", 10, { 100: 0, 268: rows - 9 }), ...hourly("calendar", 10, { 100: 0, 268: 9 })];
     const found = (await judged(planText(), { rows: log })).find("gaps");
     expect(found?.parts[0]?.result).toBe(result);
     if (result === "caution") {
@@ -43,6 +43,24 @@ describe("planted hours without rows", () => {
     expect((await judged(planText(), { rows: thin([...run(114), ...run(114 + 168)]) })).find("gaps")?.result).toBe(
       "pass",
     );
+  });
+
+  it.each([
+    ["the day before", 76],
+    ["the day after", 124],
+  ])("are no gap where the same hour of %s is thin", async (_, hour) => {
+    const log = [...hourly("list", 10, { 100: 0, [hour]: 9 }), ...hourly("calendar", 10, { 100: 0 })];
+    expect((await judged(planText(), { rows: log })).find("gaps")?.result).toBe("pass");
+  });
+
+  it("are found on the first day by the hours next to them, and not where the log only begins", async () => {
+    const first = [...hourly("list", 10, { 5: 0 }), ...hourly("calendar", 10, { 5: 0 })];
+    expect((await judged(planText(), { rows: first })).find("gaps")?.sentence).toContain(
+      "on 2 March 2026 from 5:00 to 6:00",
+    );
+    const silent = { 0: 1, ...Object.fromEntries(Array.from({ length: 30 }, (_, i) => [i + 1, 0])) };
+    const begins = [...hourly("list", 10, silent), ...hourly("calendar", 10, silent)];
+    expect((await judged(planText(), { rows: begins })).find("gaps")?.parts[0]?.result).toBe("pass");
   });
 
   it("of one entry of the log name that entry", async () => {
