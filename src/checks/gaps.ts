@@ -1,9 +1,9 @@
 import type { Silence, SourceHours } from "../engine/soundnessTypes.ts";
-import type { Reduction } from "../engine/types.ts";
+import type { ByVariant, Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { list, plural, quoted } from "../words/index.ts";
 import { asCheck, type Finding, passed } from "./finding.ts";
-import { gapsOf, type HourRun, runText } from "./hours.ts";
+import { gapsOf, type HourRun, hoursLike, runText } from "./hours.ts";
 import { sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
 import type { Check } from "./types.ts";
@@ -56,24 +56,26 @@ interface Judged {
 }
 
 /**
- * The chance that none of the n units with a row in a run of hours is of an arm with share s is (1 - s)^n; times the number
- * of hours and arms looked at (Bonferroni). s is the smaller of the arm's share of the entry's rows and of the enrolled.
+ * The chance that none of the n units with a row in a run of hours is of an arm with share s is (1 - s)^n; times the hours
+ * and arms looked at (Bonferroni). s is the smallest share that the arm has of the enrolled, of the rows a day before and
+ * after the run, and of the rows in the same hours of other weeks or days: what a variant makes more of is no silence of the
+ * others. Without such other hours nothing is said.
  */
 function byArm(
   plan: Plan,
   sources: readonly SourceHours[],
   silences: readonly Silence[],
-  enrolled: readonly number[],
+  enrolled: ByVariant,
 ): Finding | null {
-  const compared = sources.filter(({ byVariant }) => byVariant.filter((rows) => rows > 0).length > 1);
-  if (compared.length === 0) return null;
-  const looks = sum(compared.map(({ hours, byVariant }) => hours.length * byVariant.length));
+  const looks =
+    sum(sources.map(({ hours }) => hours.filter(({ byVariant }) => sum(byVariant) > 0).length)) * plan.variants.length;
+  if (looks === 0) return null;
   const judged = silences
     .flatMap((silence): Judged[] => {
-      const source = compared.find((one) => one.source === silence.source);
+      const source = sources.find((one) => one.source === silence.source);
       if (source === undefined) return [];
-      const share = Math.min(shareOf(source.byVariant, silence.variant), shareOf(enrolled, silence.variant));
-      return [{ silence, source, p: Math.min(1, looks * (1 - share) ** silence.others) }];
+      const shares = [enrolled, ...hoursLike(source.hours, silence)].map((counts) => shareOf(counts, silence.variant));
+      return [{ silence, source, p: Math.min(1, looks * (1 - Math.min(...shares)) ** silence.others) }];
     })
     .sort((a, b) => a.p - b.p);
   const [worst] = judged;
@@ -84,23 +86,24 @@ function byArm(
     return passed("by variant", sentence, { p });
   }
   const { silence, source } = worst;
-  const name = quoted(plan.variants[silence.variant]?.name ?? "");
+  const variant = plan.variants[silence.variant]?.name ?? "";
+  const when = runText(source.hours, silence);
   const place = plan.log.length === 1 ? "" : ` in ${sourceName(plan, source.source)}`;
   const others = judged.filter((one) => byP(one.p) !== "pass").length - 1;
-  const more = others > 0 ? ` So do ${plural(others, "other run", "other runs")} of hours.` : "";
+  const more =
+    others > 0
+      ? ` There ${others === 1 ? "is" : "are"} ${plural(others, "other run", "other runs")} of hours like it.`
+      : "";
   return {
     about: "by variant",
     result,
     strong: false,
-    sentence: `${name} has no row${place} ${runText(source.hours, silence)}, while ${units(plan, silence.others)} of the other groups have. ${byChance("so long a silence", p)}${more}`,
-    remedy: `Find out why rows of one group were not recorded or got lost; if they exist, fill them in and run the report again. If that variant was not shown yet, or no more, count the days on which all were (enrolment: from, before).`,
-    figures: {
-      p,
-      variant: plan.variants[silence.variant]?.name ?? "",
-      when: runText(source.hours, silence),
-      units: silence.others,
-    },
+    sentence: `${quoted(variant)} has no row${place} ${when}, while ${units(plan, silence.others)} of the other ${plan.variants.length === 2 ? "group" : "groups"} have. ${byChance("so long a silence", p)}${more}`,
+    remedy:
+      "Find out why rows of one group were not recorded or got lost; if they exist, fill them in and run the report again. If that variant was not shown yet, or no more, count the days on which all were (enrolment: from, before).",
+    figures: { p, variant, when, units: silence.others },
   };
 }
 
-const shareOf = (counts: readonly number[], at: number): number => (counts[at] ?? 0) / Math.max(1, sum(counts));
+/** Of no rows at all, no share: nothing can then be said. */
+const shareOf = (counts: ByVariant, at: number): number => (counts[at] ?? 0) / Math.max(1, sum(counts));

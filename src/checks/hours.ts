@@ -1,5 +1,7 @@
 import type { HourOfLog } from "../engine/soundnessTypes.ts";
+import type { ByVariant } from "../engine/types.ts";
 import { dateText, dayOfEpoch } from "../words/index.ts";
+import { added } from "./flow.ts";
 
 /** Places in a list of hours, both inclusive. */
 export interface HourRun {
@@ -15,32 +17,63 @@ const ROWS_AT_LEAST = 20;
 const WEEK = 7;
 
 /**
- * The runs of hours without a row over which the same hours, by the clock, have at least 20 rows a week before and after; or,
- * where the log holds neither week, as many days before and after as the run is long. Of two such runs both must have them:
- * an hour that is quiet every week is no gap.
+ * The runs of hours without a row that lie between hours which should be like them and have at least 20 rows: on either side the
+ * same hours by the clock, whole weeks away and as few whole days as the run is long; or, where the log holds none of them
+ * on that side, as many hours next to the run. All must have the rows: an hour that is quiet every week is no gap, and a
+ * log that begins thinly has none.
  */
 export function gapsOf(hours: readonly HourOfLog[]): HourRun[] {
-  const rows = new Map<number, number>();
-  // the hour that the clock shows twice in autumn holds the rows of both
-  for (const hour of hours) rows.set(placeOf(hour), (rows.get(placeOf(hour)) ?? 0) + hour.rows);
-  const ends = [hours[0], hours.at(-1)].map((hour) => (hour === undefined ? 0 : placeOf(hour)));
+  const same = sameHours(hours);
   return emptyRuns(hours).filter((run) => {
-    const places = hours.slice(run.first, run.last + 1).map(placeOf);
-    const days = Math.ceil(places.length / 24);
-    const weeks = Math.ceil(days / WEEK) * WEEK;
-    const around = (shift: number) =>
-      [-shift, shift]
-        .map((away) => places.map((place) => place + away * 24))
-        .filter((moved) => (moved[0] ?? 0) >= (ends[0] ?? 0) && (moved.at(-1) ?? 0) <= (ends[1] ?? 0))
-        .map((moved) => moved.reduce((total, place) => total + (rows.get(place) ?? 0), 0));
-    const ofWeeks = around(weeks);
-    const others = ofWeeks.length > 0 ? ofWeeks : around(days);
-    return others.length > 0 && others.every((total) => total >= ROWS_AT_LEAST);
+    const length = run.last - run.first + 1;
+    const sides = [
+      { side: -1, next: hours.slice(Math.max(0, run.first - length), run.first) },
+      { side: 1, next: hours.slice(run.last + 1, run.last + 1 + length) },
+    ] as const;
+    return sides.every(({ side, next }) => {
+      const alike = same(run, side);
+      return (alike.length > 0 ? alike : [next]).every((others) => rowsOf(others) >= ROWS_AT_LEAST);
+    });
   });
 }
 
+const rowsOf = (hours: readonly HourOfLog[]): number => hours.reduce((total, { rows }) => total + rows, 0);
+
+/**
+ * Rows by variant of hours that should be like those of a run: the same by the clock in other weeks and on other days, and a
+ * day before and after it. Without any of the first kind, one list of no rows.
+ */
+export function hoursLike(hours: readonly HourOfLog[], run: HourRun): ByVariant[] {
+  const same = sameHours(hours);
+  const alike = [...same(run, -1), ...same(run, 1)].map((own) => added(own.map(({ byVariant }) => byVariant)));
+  const around = [
+    ...hours.slice(Math.max(0, run.first - DAY), run.first),
+    ...hours.slice(run.last + 1, run.last + 1 + DAY),
+  ];
+  return alike.length === 0 ? [[]] : [...alike, added(around.map(({ byVariant }) => byVariant))];
+}
+
+const DAY = 24;
+
+/** The hours before (-1) or after (1) a run that the clock shows like those of it: weeks away, and days away. */
+function sameHours(hours: readonly HourOfLog[]): (run: HourRun, side: -1 | 1) => HourOfLog[][] {
+  const byPlace = new Map<number, HourOfLog[]>();
+  // the hour that the clock shows twice in autumn is both
+  for (const hour of hours) byPlace.set(placeOf(hour), [...(byPlace.get(placeOf(hour)) ?? []), hour]);
+  const [start = 0, end = 0] = [hours[0], hours.at(-1)].map((hour) => (hour === undefined ? 0 : placeOf(hour)));
+  return (run, side) => {
+    const places = hours.slice(run.first, run.last + 1).map(placeOf);
+    const days = Math.ceil(places.length / DAY);
+    const away = [...new Set([days, Math.ceil(days / WEEK) * WEEK])];
+    return away
+      .map((by) => places.map((place) => place + side * by * DAY))
+      .filter((moved) => (moved[0] ?? 0) >= start && (moved.at(-1) ?? 0) <= end)
+      .map((moved) => moved.flatMap((place) => byPlace.get(place) ?? []));
+  };
+}
+
 /** Hours of the clock since 1970-01-01. */
-const placeOf = ({ day, hour }: HourOfLog): number => day * 24 + hour;
+const placeOf = ({ day, hour }: HourOfLog): number => day * DAY + hour;
 
 function emptyRuns(hours: readonly HourOfLog[]): HourRun[] {
   const runs: { first: number; last: number }[] = [];

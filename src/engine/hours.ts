@@ -22,14 +22,24 @@ export interface SilentRun {
 /** Every hour of a span, also those without rows, by the clock of the plan. */
 export function hoursOfSpan(
   counts: readonly HourCount[],
+  arms: readonly ArmHour[],
+  variants: number,
   firstHour: number,
   lastHour: number,
   clock: (hour: number) => { readonly day: number; readonly hour: number },
 ): HourOfLog[] {
   const rows = new Map(counts.map((count) => [count.hour, count.rows]));
+  const byVariant = new Map<number, number[]>();
+  for (const { hour, variant, rows: own } of arms) {
+    const counted = byVariant.get(hour) ?? new Array<number>(variants).fill(0);
+    counted[variant] = own;
+    byVariant.set(hour, counted);
+  }
+  const none = new Array<number>(variants).fill(0);
   return Array.from({ length: lastHour - firstHour + 1 }, (_, i) => ({
     ...clock(firstHour + i),
     rows: rows.get(firstHour + i) ?? 0,
+    byVariant: byVariant.get(firstHour + i) ?? none,
   }));
 }
 

@@ -1,20 +1,18 @@
 import type { Plan } from "../plan/index.ts";
 import { count, type Engine, type Row, textOrNull } from "./engine.ts";
+import { valuesOfFilters } from "./filterValues.ts";
 import { type ArmHour, byRows, type HourCount, hoursOfSpan, silentRuns } from "./hours.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import type { SourceSpan } from "./logEnd.ts";
-import { nanoText } from "./nano.ts";
 import type {
   DayOfEnrolment,
   EndedUnits,
   EnrollingRows,
-  FilterValues,
   Silence,
   SoundnessFacts,
   SourceHours,
 } from "./soundnessTypes.ts";
 import {
-  commonestValues,
   type EnrolmentKey,
   endedByGroup,
   enrolledByMetricRows,
@@ -59,7 +57,7 @@ export async function soundness(
     enrolling: await enrollingRows(plan, layout, fates, enrolled, engine),
     byMetricRows: await byMetricRows(plan, stages, engine),
     keptUnfollowed: await keptUnfollowed(plan, stages, engine),
-    valuesOfFilters: await valuesOfFilters(plan, stages, engine),
+    valuesOfFilters: await valuesOfFilters(plan, layout, stages.account, engine),
     ...(layout.hasTime ? await hours(plan, stages, engine) : { sources: [], silences: [] }),
   };
 }
@@ -142,47 +140,13 @@ async function byMetricRows(
     const value = textOrNull(row, "value");
     return value === null ? [] : [{ value, rows: count(row, "units") }];
   });
-  return { units: rows.reduce((sum, row) => sum + count(row, "units"), 0), events: events.slice(0, VALUES_SHOWN) };
+  return { units: rows.reduce((sum, row) => sum + count(row, "units"), 0), events: events.slice(0, EVENTS_SHOWN) };
 }
-const VALUES_SHOWN = 5;
+const EVENTS_SHOWN = 5;
 
 async function keptUnfollowed(plan: Plan, { logEndUs }: Stages, engine: Engine): Promise<ByVariant | null> {
   if (plan.followUp?.incomplete !== "keep" || logEndUs === null) return null;
   return byVariant(plan, await engine.query(unfollowed(plan, unitLineIds(plan).length - 1, logEndUs)));
-}
-
-async function valuesOfFilters(plan: Plan, { layout, account }: Stages, engine: Engine): Promise<FilterValues[]> {
-  const found: FilterValues[] = [];
-  for (const filter of plan.filters) {
-    if (!("where" in filter) || !isIdle(filter, account)) continue;
-    const columns = [...new Set(filter.where.map(({ column }) => column))].filter((column) => !isId(plan, column));
-    const values: FilterValues["columns"][number][] = [];
-    for (const column of columns) values.push({ column, values: await commonest(layout, column, engine) });
-    found.push({ filter: filter.name, columns: values });
-  }
-  return found;
-}
-
-function isIdle({ name, drop }: Plan["filters"][number], { rowLines, unitLines }: Stages["account"]): boolean {
-  const id = `filter:${name}`;
-  return drop === "rows"
-    ? rowLines.some((line) => line.id === id && line.rows === 0)
-    : unitLines.some((line) => line.id === id && line.units === 0);
-}
-
-/** No id of a unit, and no other that is nearly one, may reach the report. */
-const isId = (plan: Plan, column: string) =>
-  plan.log.some(({ columns }) => columns.unit === column || columns.eventId === column);
-
-async function commonest(layout: Layout, column: string, engine: Engine) {
-  const rows = await engine.query(commonestValues(layout, layout.columns.indexOf(column), VALUES_SHOWN));
-  return rows.map((row) => {
-    const { value } = row;
-    return {
-      value: typeof value === "object" && value !== null ? nanoText(value.nano) : String(value),
-      rows: count(row, "rows"),
-    };
-  });
 }
 
 const HOUR_US = 3_600_000_000n;
@@ -202,13 +166,10 @@ async function hours(
     const [first, last] = [hourOf(span.firstUs), hourOf(span.lastUs)];
     const isWithin = ({ source, hour }: HourCount) => source === span.source && hour >= first && hour <= last;
     const own = arms.filter(isWithin);
-    const rowsOf = (variant: number) =>
-      own.filter((one) => one.variant === variant).reduce((sum, { rows }) => sum + rows, 0);
     const source: SourceHours = {
       source: span.source,
       outside: span.outside,
-      byVariant: plan.variants.map((_, variant) => rowsOf(variant)),
-      hours: hoursOfSpan(all.filter(isWithin), first, last, clock),
+      hours: hoursOfSpan(all.filter(isWithin), own, plan.variants.length, first, last, clock),
     };
     return { source, first, own, runs: silentRuns(own) };
   });
@@ -216,17 +177,7 @@ async function hours(
     .flatMap((one) => one.runs)
     .sort(byRows)
     .slice(0, SILENCES_KEPT);
-  const hoursOfRuns = runs.flatMap((run, r) =>
-    [
-      ...new Set(
-        made
-          .flatMap(({ own }) => own)
-          .filter((one) => one.source === run.source && one.hour >= run.first && one.hour <= run.last)
-          .map(({ hour }) => hour),
-      ),
-    ].map((hour) => [r, run.source, hour] as const),
-  );
-  const counted = hoursOfRuns.length === 0 ? [] : await engine.query(unitsInRuns(hoursOfRuns, unknownLine(plan)));
+  const counted = runs.length === 0 ? [] : await engine.query(unitsInRuns(runs, unknownLine(plan)));
   const silences = runs.map((run, r): Silence => {
     const start = made.find(({ source }) => source.source === run.source)?.first ?? 0;
     const row = counted.find((found) => count(found, "run") === r);

@@ -56,8 +56,6 @@ export interface SourceHours {
   /** Index into the plan's log. */
   readonly source: number;
   readonly outside: number;
-  /** Of the enrolled units, by their variant, within the span. */
-  readonly byVariant: ByVariant;
   /** From the span's first row to its last, without a break. */
   readonly hours: readonly HourOfLog[];
 }
@@ -68,6 +66,8 @@ export interface HourOfLog {
   /** 0 to 23. */
   readonly hour: number;
   readonly rows: number;
+  /** Of these, rows of enrolled units, by their variant. */
+  readonly byVariant: ByVariant;
 }
 
 export interface Silence {

@@ -47,12 +47,13 @@ export function sourcesOf(plan: Plan, ended: readonly Ended[], enrolled: readonl
       {
         source,
         outside: all - span.rows,
-        byVariant: plan.variants.map((_variant, v) => own.filter(({ variant }) => variant === v).length),
         hours: Array.from({ length: hourOf(span.last) - first + 1 }, (_hour, i) => {
           const ms = (first + i) * HOUR_MS;
           const local = Math.floor((ms + clock.offset(ms)) / HOUR_MS);
           const day = Math.floor(local / 24);
-          return { day, hour: local - 24 * day, rows: own.filter(({ hour }) => hour === first + i).length };
+          const here = own.filter(({ hour }) => hour === first + i);
+          const byVariant = plan.variants.map((_variant, v) => here.filter(({ variant }) => variant === v).length);
+          return { day, hour: local - 24 * day, rows: here.length, byVariant };
         }),
       },
     ];

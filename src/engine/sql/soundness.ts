@@ -129,17 +129,21 @@ export const rowsByHourAndVariant = (unknownVariantLine: number): Statement => s
   WHERE r.fate <> ${FATE.rejected} AND e.line > ${unknownVariantLine}
   GROUP BY r.source, ${hourOf(sql`r.at_us`)}, e.variant`;
 
-/** Enrolled units with a row in some runs of hours, given as (run, source, hour). */
-export const unitsInRuns = (
-  runs: readonly (readonly [run: number, source: number, hour: number])[],
-  unknownVariantLine: number,
-): Statement => sql`
+/** Hours of the epoch of one entry of the log, both inclusive. */
+interface RunOfHours {
+  readonly source: number;
+  readonly first: number;
+  readonly last: number;
+}
+
+/** Enrolled units with a row in some runs of hours, by the run's place. */
+export const unitsInRuns = (runs: readonly RunOfHours[], unknownVariantLine: number): Statement => sql`
   SELECT h.run, count(DISTINCT e.rowid) AS units
   FROM rows AS r
   JOIN (VALUES ${join(
-    runs.map(([run, source, hour]) => sql`(${run}, ${source}, ${hour})`),
+    runs.map(({ source, first, last }, run) => sql`(${run}, ${source}, ${first}, ${last})`),
     ", ",
-  )}) AS h(run, source, hour) ON h.source = r.source AND h.hour = ${hourOf(sql`r.at_us`)}
+  )}) AS h(run, source, first, last) ON h.source = r.source AND ${hourOf(sql`r.at_us`)} BETWEEN h.first AND h.last
   JOIN enrolments AS e ON e.unit = r.unit
   WHERE r.fate <> ${FATE.rejected} AND e.line > ${unknownVariantLine}
   GROUP BY h.run`;

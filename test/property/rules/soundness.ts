@@ -45,9 +45,6 @@ export const soundnessRules: Rules = {
     facts(seen).silences.some(({ first, last, others }) => last > first && others === 1),
   "an arm silent in one entry of the log, and not in another": (seen) => {
     const named = facts(seen).silences.map(({ source }) => source);
-    return (
-      named.length > 0 &&
-      facts(seen).sources.some(({ source, byVariant }) => !named.includes(source) && sum(byVariant) > 0)
-    );
+    return named.length > 0 && facts(seen).sources.some(({ source }) => !named.includes(source));
   },
 };
