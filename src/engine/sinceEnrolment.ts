@@ -28,8 +28,9 @@ interface Daily {
 }
 
 /**
- * Every metric by day since enrolment, over the units followed to the end; null where that cannot be told: without a
- * follow-up of two whole days, of quantiles, and of what does not add up over days.
+ * The metrics that decide by day since enrolment, over the units followed to the end; null where that cannot be told: without
+ * a follow-up of two whole days, of quantiles, and of what does not add up over days. Not of secondary metrics: unit by
+ * unit and day by day is the finest and dearest of all groupings.
  */
 export async function sinceEnrolment(
   plan: Plan,
@@ -59,32 +60,50 @@ export async function sinceEnrolment(
       : [{ y: one(measures, at(of)), x: one(measures, at(per)), ofY: one(tables, at(of)), ofX: one(tables, at(per)) }],
   );
   const joints = await jointTables(pairs, engine, EACH_DAY);
-  const from = slopes(columns, days);
-  const ofSlopes = await aboutZero(
-    columns.map((_, i) => name(`s${i}`)),
-    from,
+  const plain = daily.filter(({ per }) => per === null).map(({ of }) => at(of));
+  const slopeTables = await slopesOf(
+    plain.map((i) => one(measures, i)),
+    days,
     engine,
     dialect,
   );
-  const slopeTables = await decimalTables(ofSlopes, engine, { bucket: sql`0`, units: sql`TRUE`, from });
 
-  let next = 0;
+  let [nextPair, nextPlain] = [0, 0];
   const found = daily.map(({ metric, of, per }, i) => {
     const units = plan.variants.map((_, v) => unitsOf(followed, `n${i}`, v));
-    const joint = per === null ? null : one(joints, next++);
+    const joint = per === null ? null : one(joints, nextPair++);
     const groups: GroupCells = {
       of: withZeros(one(tables, at(of)), units, days),
       joint: joint === null ? null : pairsWithZeros(joint, units, days),
     };
-    const slope = per === null ? withZeros(one(slopeTables, at(of)), units, 1) : null;
+    const slope = per === null ? withZeros(one(slopeTables, nextPlain++), units, 1) : null;
     return { metric, since: { days, groups, slope } };
   });
   return plan.metrics.map((_, m) => found.find(({ metric }) => metric === m)?.since ?? null);
 }
 
+/** Of each value the cells of its slope over the days, unit by unit. */
+async function slopesOf(
+  measures: readonly DecimalMeasure[],
+  days: number,
+  engine: Engine,
+  dialect: Dialect,
+): Promise<CellTable[]> {
+  if (measures.length === 0) return [];
+  const from = slopes(
+    measures.map(({ x }) => x),
+    days,
+  );
+  // The weights add up to less than days^2, so this scale reaches every sum of theirs.
+  const reach = powerOfTwoOver(BigInt(days * days) * 1_000_000_000n);
+  const ofSlopes = measures.map(({ scale }, i) => measured(name(`s${i}`), "0", scale * reach, [], dialect));
+  return decimalTables(ofSlopes, engine, { bucket: sql`0`, units: sql`TRUE`, from });
+}
+
 /** What adds up over days: rows and sums, and whether there was a row. */
 function dailyOf(metric: Metric, m: number, layout: Layout): Daily[] {
   const { summary } = metric;
+  if (metric.role === "secondary") return [];
   const adds = (side: "of" | "per") => {
     const kind = metric[side]?.aggregate.kind;
     return summary === "proportion" || kind === "count" || kind === "sum" || kind === "days";
