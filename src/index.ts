@@ -10,6 +10,7 @@ import {
   effects as allEffects,
   conclusion as concluded,
   contrastFigures,
+  daysSince as daysSinceOf,
   otherChoices,
   type Pair,
   subgroups as subgroupsOf,
@@ -124,6 +125,7 @@ function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
   const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
+  const daysSince = daysSinceOf(plan, reduction, effects);
   const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
   const planSha256 = createHash("sha256").update(planText).digest("hex");
   return renderReport({
@@ -136,6 +138,7 @@ function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }
     effects,
     choices,
     accruals,
+    daysSince,
     subgroups,
     conclusion,
   });

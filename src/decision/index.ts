@@ -30,6 +30,8 @@ export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
+// the effect by day since enrolment
+export { type DaysSince, daysSince, type Trend } from "./since-enrolment.ts";
 // the effect by subgroup
 export { heterogeneitySentence, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
 export { type Subgroup, type SubgroupLevel, subgroups, UNITS_FOR_LEVEL } from "./subgroups.ts";

@@ -3,6 +3,7 @@ import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
+import { dayParts } from "./sections/days.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
@@ -35,6 +36,7 @@ export interface Page {
 export interface FurtherOnMetric {
   readonly sampling: readonly SamplingPart[];
   readonly accrual: readonly AccrualPart[];
+  readonly days: readonly AccrualPart[];
   readonly subgroups: readonly SubgroupPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
@@ -55,6 +57,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
   const accrual = await accrualParts(plan, effects, inputs.accruals, reduction);
+  const days = await dayParts(plan, effects, inputs.daysSince);
   const subgroups = await subgroupParts(plan, effects, inputs.subgroups);
   const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
@@ -74,6 +77,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
       ...metric,
       sampling: sampling.get(metric.name) ?? [],
       accrual: accrual.get(metric.name) ?? [],
+      days: days.get(metric.name) ?? [],
       subgroups: subgroups.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.

@@ -4,6 +4,7 @@ import type {
   ChoiceName,
   Choices,
   Conclusion,
+  DaysSince,
   DecisionWord,
   Effect,
   Subgroup,
@@ -29,6 +30,7 @@ export interface ReportJson {
   readonly effects: readonly EffectJson[];
   readonly subgroups: readonly SubgroupJson[];
   readonly accrual: readonly AccrualJson[];
+  readonly sinceEnrolment: readonly SinceEnrolmentJson[];
   readonly sensitivity: readonly SensitivityJson[];
   readonly changes: null;
   readonly provenance: ProvenanceJson;
@@ -99,6 +101,30 @@ export interface AccrualJson {
     readonly bandLow: number | null;
     readonly bandHigh: number | null;
   }[];
+}
+
+/** One effect by day since enrolment, in the metric's unit, unadjusted and pointwise. */
+export interface SinceEnrolmentJson {
+  readonly metric: string;
+  readonly variant: string;
+  /** Of both arms, followed to the end. */
+  readonly units: number;
+  readonly days: readonly {
+    /** 0 is the first day of 24 hours after enrolment. */
+    readonly day: number;
+    readonly estimate: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly p: number | null;
+  }[];
+  /** Change of the difference from one day to the next. */
+  readonly trend: {
+    readonly estimate: number | null;
+    readonly standardError: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly p: number | null;
+  };
 }
 
 export interface EffectJson {
@@ -183,6 +209,7 @@ export interface ReportInputs {
   readonly choices: readonly Choices[];
   /** Of every effect that has one, in their order. */
   readonly accruals: readonly Accrual[];
+  readonly daysSince: readonly DaysSince[];
   readonly subgroups: readonly Subgroup[];
   readonly conclusion: Conclusion;
 }
