@@ -9,6 +9,7 @@ import {
   type Conclusion,
   conclusion as concluded,
   contrastFigures,
+  daysSince as daysSinceOf,
   type Effect,
   otherChoices,
   type Pair,
@@ -83,6 +84,7 @@ export function decisionReport(
   const plan = atThisLook(planned, reduction);
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
   const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
+  const daysSince = daysSinceOf(plan, reduction, effects);
   const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
   const checks = [...planCheck(plan, planText, rerun), ...found.checks];
   return renderReport({
@@ -95,6 +97,7 @@ export function decisionReport(
     effects,
     choices,
     accruals,
+    daysSince,
     subgroups,
     conclusion,
     ...(rerun === null ? {} : { rerun }),

@@ -8,9 +8,10 @@ export { armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "./c
 export { exactly, type Fraction, fraction, nearestNumber } from "./fraction.ts";
 // Days and levels
 export { accumulated, type GroupSums, groupArms, groupCovariates, groupSums } from "./group-arms.ts";
-// Adjusted contrasts
 export { adjustedSums, covariateArms, jointSums } from "./joint.ts";
 export { sumsOfSquares } from "./pair-ratio.ts";
+// Adjusted contrasts
+export { partSums, scoreSums } from "./roll-up.ts";
 // how an arm's values lie
 export { type Bin, beyond, type Shape, shape } from "./shape.ts";
 export { NANO, nanoOf } from "./sums.ts";

@@ -36,6 +36,8 @@ export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf, questionOfNextTest } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
+// the effect by day since enrolment
+export { type DaysSince, daysSince, type Trend } from "./since-enrolment.ts";
 // the size of a test to come, without any data
 export { levelAt, type SizeAnswer, type SizeQuestion, sizeAhead } from "./size-ahead.ts";
 // the effect by subgroup

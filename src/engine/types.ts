@@ -135,6 +135,11 @@ export interface SinceEnrolment {
   readonly groups: GroupCells;
   /** Sums of each unit's sum over d of (2 d - (days - 1)) y_d, in one group; null for a ratio. */
   readonly slope: CellTable | null;
+  /**
+   * Of a ratio the same of its scores (a - R b) / mean(b), R and mean(b) of the unit's arm on that day; an arm without a
+   * ratio on some day has none.
+   */
+  readonly scores: ScoreTable | null;
 }
 
 /** Cells whose `bucket` is the group; joint sums of a ratio's two parts, or of a value and its covariate. */

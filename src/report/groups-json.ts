@@ -1,11 +1,11 @@
-import { type Accrual, levelSentence, type Subgroup, type SubgroupLevel } from "../decision/index.ts";
+import { type Accrual, type DaysSince, levelSentence, type Subgroup, type SubgroupLevel } from "../decision/index.ts";
 import type { Effect } from "../decision/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { isAbsent } from "../stats/index.ts";
 import { isoDay } from "./sections/weekdays.ts";
-import type { AccrualJson, DifferenceJson, SubgroupJson } from "./types.ts";
+import type { AccrualJson, DifferenceJson, SinceEnrolmentJson, SubgroupJson } from "./types.ts";
 
-/** `subgroups` and `accrual` of report.json (DESIGN 7). */
+/** `subgroups`, `accrual` and `sinceEnrolment` of report.json (DESIGN 7). */
 
 export function subgroupJson(subgroup: Subgroup, effects: readonly Effect[], plan: Plan): SubgroupJson {
   const { column, metric, variant, levels, heterogeneity } = subgroup;
@@ -57,5 +57,15 @@ export function accrualJson({ metric, variant, band, days }: Accrual): AccrualJs
     variant,
     band: { units: band.planned, planned: band.isPlanned },
     days: days.map(({ day, ...row }) => ({ day: isoDay(day), ...row })),
+  };
+}
+
+export function sinceEnrolmentJson({ metric, variant, units, days, trend }: DaysSince): SinceEnrolmentJson {
+  return {
+    metric,
+    variant,
+    units: units.control + units.variant,
+    days: days.map(({ difference: { estimate, low, high, p } }, day) => ({ day, estimate, low, high, p })),
+    trend,
   };
 }

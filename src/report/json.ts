@@ -5,7 +5,7 @@ import type { Plan } from "../plan/types.ts";
 import type { Contrast } from "../stats/types.ts";
 import { changesJson } from "./changes/changes.ts";
 import { twelveDigits } from "./digits.ts";
-import { accrualJson, subgroupJson } from "./groups-json.ts";
+import { accrualJson, sinceEnrolmentJson, subgroupJson } from "./groups-json.ts";
 import { rowLine, unitLine } from "./ledger.ts";
 import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
 
@@ -26,6 +26,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     effects: inputs.effects.map(effectJson),
     subgroups: inputs.subgroups.map((subgroup) => subgroupJson(subgroup, inputs.effects, plan)),
     accrual: inputs.accruals.map(accrualJson),
+    sinceEnrolment: inputs.daysSince.map(sinceEnrolmentJson),
     sensitivity: inputs.choices.map(sensitivityJson),
     changes: null,
     provenance: {

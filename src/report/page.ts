@@ -7,6 +7,7 @@ import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type ConsortTable, consortTable } from "./sections/consort.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
+import { dayParts } from "./sections/days.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type DesignSection, designSection } from "./sections/design.ts";
 import { type DistributionFigure, distributionFigures } from "./sections/distribution.ts";
@@ -59,6 +60,7 @@ export interface FurtherOnMetric {
   readonly distribution: DistributionFigure | null;
   readonly sampling: readonly SamplingPart[];
   readonly accrual: readonly AccrualPart[];
+  readonly days: readonly AccrualPart[];
   readonly subgroups: readonly SubgroupPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
@@ -80,6 +82,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
   const accrual = await accrualParts(plan, effects, inputs.accruals, reduction);
+  const days = await dayParts(plan, effects, inputs.daysSince);
   const subgroups = await subgroupParts(plan, effects, inputs.subgroups);
   const distributions = await distributionFigures(plan, reduction, effects);
   const baseline = baselineTable(plan, reduction);
@@ -113,6 +116,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
       distribution: distributions.get(metric.name) ?? null,
       sampling: sampling.get(metric.name) ?? [],
       accrual: accrual.get(metric.name) ?? [],
+      days: days.get(metric.name) ?? [],
       subgroups: subgroups.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.

@@ -118,6 +118,32 @@ const accrual = z
   })
   .describe("The effect as units enrolled: low and high of that day alone, the band on all days at once.");
 
+const sinceEnrolment = z
+  .strictObject({
+    metric: z.string(),
+    variant: z.string(),
+    units: count.describe("Of both arms, followed to the end."),
+    days: z.array(
+      z.strictObject({
+        day: count.describe("0 is the first day of 24 hours after enrolment."),
+        estimate: numberOrNull,
+        low: numberOrNull,
+        high: numberOrNull,
+        p: numberOrNull,
+      }),
+    ),
+    trend: z
+      .strictObject({
+        estimate: numberOrNull,
+        standardError: numberOrNull,
+        low: numberOrNull,
+        high: numberOrNull,
+        p: numberOrNull,
+      })
+      .describe("Change of the difference from one day to the next."),
+  })
+  .describe("One effect by day since enrolment, unadjusted and pointwise.");
+
 const check = z
   .object({
     id: z.string(),
@@ -158,6 +184,7 @@ export const reportSchema = z.strictObject({
   effects: z.array(effect),
   subgroups: z.array(subgroup),
   accrual: z.array(accrual),
+  sinceEnrolment: z.array(sinceEnrolment),
   sensitivity: z
     .array(
       z.strictObject({

@@ -4,6 +4,7 @@ import type {
   ChoiceName,
   Choices,
   Conclusion,
+  DaysSince,
   DecisionWord,
   Effect,
   Subgroup,
@@ -31,6 +32,7 @@ export interface ReportJson {
   readonly effects: readonly EffectJson[];
   readonly subgroups: readonly SubgroupJson[];
   readonly accrual: readonly AccrualJson[];
+  readonly sinceEnrolment: readonly SinceEnrolmentJson[];
   readonly sensitivity: readonly SensitivityJson[];
   readonly changes: ChangesJson | null;
   readonly provenance: ProvenanceJson;
@@ -101,6 +103,30 @@ export interface AccrualJson {
     readonly bandLow: number | null;
     readonly bandHigh: number | null;
   }[];
+}
+
+/** One effect by day since enrolment, in the metric's unit, unadjusted and pointwise. */
+export interface SinceEnrolmentJson {
+  readonly metric: string;
+  readonly variant: string;
+  /** Of both arms, followed to the end. */
+  readonly units: number;
+  readonly days: readonly {
+    /** 0 is the first day of 24 hours after enrolment. */
+    readonly day: number;
+    readonly estimate: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly p: number | null;
+  }[];
+  /** Change of the difference from one day to the next. */
+  readonly trend: {
+    readonly estimate: number | null;
+    readonly standardError: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly p: number | null;
+  };
 }
 
 export interface EffectJson {
@@ -185,6 +211,7 @@ export interface ReportInputs {
   readonly choices: readonly Choices[];
   /** Of every effect that has one, in their order. */
   readonly accruals: readonly Accrual[];
+  readonly daysSince: readonly DaysSince[];
   readonly subgroups: readonly Subgroup[];
   readonly conclusion: Conclusion;
   /** Of a report that replaces an earlier one. */

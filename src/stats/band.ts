@@ -14,8 +14,8 @@ export interface BandFor {
  * Nominal only where the normal approximation is good at every n looked at.
  * @param units n of both arms, at least 1
  *
- * Source: Waudby-Smith, Arbour, Sinha, Kennedy and Ramdas 2024, Annals of Statistics 52, 2613-2640, theorem 2.2 and eq.
- * (5) (arXiv 2103.06476); r^2 by the approximation of its appendix.
+ * Source: Waudby-Smith, Arbour, Sinha, Kennedy and Ramdas 2024, Annals of Statistics 52, 2613-2640, theorem 2.2
+ * (arXiv 2103.06476); r^2 as its appendix approximates the best one.
  */
 export function bandCritical(units: number, { alpha, planned }: BandFor): number {
   const last = -2 * Math.log(alpha);

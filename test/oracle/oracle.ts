@@ -1,7 +1,7 @@
 import { type ColumnTable, op, escape as rowwise } from "arquero";
 import type { Plan } from "../../src/plan/types.ts";
 import { countCopies, rowAt, type SettledRow, settleRows } from "./ledger.ts";
-import { enrolledOf, levelsOf } from "./levels.ts";
+import { enrolledOf, levelOf, levelsOf } from "./levels.ts";
 import { byVariant, metricOf } from "./metrics.ts";
 import { ascending } from "./number.ts";
 import { readRows } from "./rows.ts";
@@ -60,7 +60,8 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
     facts: { ...factsOf(plan, rows, ended, units, end, clock), analysedByDay: byDay(plan, analysed, clock) },
-    metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
+    metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock, end)),
+    places: placesOf(plan, units, analysed, clock),
   };
   return { clock, rows, ended, units, result };
 }
@@ -140,6 +141,25 @@ function factsOf(
       ),
     ),
   };
+}
+
+/** Where each analysed unit stands among the days and the levels of the enrolled. */
+function placesOf(plan: Plan, units: readonly Unit[], analysed: readonly Unit[], clock: Clock): OracleResult["places"] {
+  const columns = plan.subgroups.map((column) => levelsOf(plan, column, enrolledOf(units)));
+  return new Map(
+    analysed.map((unit) => [
+      unit.unit,
+      {
+        day: unit.enrolledUs === null ? null : clock.day(unit.enrolledUs),
+        levels: columns.map(({ column, levels }) => {
+          const own = levelOf(plan, column, unit);
+          const named = levels.findIndex(({ level }) => level.kind === "value" && level.text === own);
+          if (named >= 0) return named;
+          return levels.findIndex(({ level }) => level.kind === (own === null ? "missing" : "rest"));
+        }),
+      },
+    ]),
+  );
 }
 
 /** Units by the local day of their enrolment. */

@@ -1,5 +1,6 @@
-import type { ByVariant, CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
+import type { ByVariant, CellTable, MetricCells, MetricGroups, Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
+import { type GroupsOutcome, groupsOfEngine, groupsOfOracle } from "./group-outcome.ts";
 import { ascending, nanoOf, nanoText } from "./number.ts";
 import type { OracleQuantile } from "./quantile.ts";
 import type { OracleFacts, OracleMetric, OracleResult, UnitValue } from "./types.ts";
@@ -32,6 +33,7 @@ export interface MetricOutcome {
   readonly covariate: readonly CovariateOutcome[] | null;
   /** The same by variant and bucket, "0/517". */
   readonly buckets: Readonly<Record<string, ArmOutcome>>;
+  readonly groups: GroupsOutcome;
 }
 
 /** Decimals as text, exact; null where the arm has no such rank. */
@@ -82,6 +84,7 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
             armOf(metric.values.filter((value) => bucketKey(value) === key)),
           ]),
         ),
+        groups: groupsOfOracle(plan, metric, result.places),
       };
     }),
   };
@@ -112,9 +115,16 @@ export function outcomeOfEngine(
         per: metric.ratio === null ? null : mergedArms(plan, cellsOf(metric.ratio.per)),
         covariate: metric.covariate === null ? null : covariateCells(plan, metric.covariate),
         buckets: Object.fromEntries(cells.map((cell) => [bucketKey(cell), merged([cell])])),
+        groups: groupsOfEngine(groupsAt(reduction, m)),
       };
     }),
   };
+}
+
+function groupsAt({ groups }: Reduction, m: number): MetricGroups {
+  const found = groups[m];
+  if (found === undefined) throw new Error(`no groups of metric ${m}`);
+  return found;
 }
 
 const isAdjusted = (plan: Plan, metric: string) =>

@@ -2,6 +2,7 @@ import type { Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { outcomeOfEngine, outcomeOfOracle } from "../oracle/outcome.ts";
 import type { OracleResult } from "../oracle/types.ts";
+import { wrongGroups } from "./groupSums.ts";
 import type { EngineRun } from "./run.ts";
 import { wrongSums } from "./sums.ts";
 
@@ -13,7 +14,9 @@ export function departures(plan: Plan, oracle: OracleResult, { reduction, quanti
   if (unbalanced.length > 0) return unbalanced;
   return oracle.metrics.flatMap((metric, at) => {
     const cells = reduction.metrics[at];
-    return cells === undefined ? [`no cells for ${metric.metric}`] : wrongSums(plan, metric, cells);
+    const groups = reduction.groups[at];
+    if (cells === undefined || groups === undefined) return [`no cells for ${metric.metric}`];
+    return [...wrongSums(plan, metric, cells), ...wrongGroups(metric, cells, groups)];
   });
 }
 

@@ -7,6 +7,7 @@ import { randomCase, rawFiles, rawLists } from "../oracle/random/case.ts";
 import { diceOf } from "../oracle/random/dice.ts";
 import { drawForm, type Form } from "../oracle/random/write.ts";
 import { covariateRules } from "./rules/covariates.ts";
+import { dayRules } from "./rules/days.ts";
 import { ledgerRules } from "./rules/ledger.ts";
 import type { Rules } from "./rules/seen.ts";
 import { soundnessRules } from "./rules/soundness.ts";
@@ -22,6 +23,7 @@ const FIRST = Number(process.env.SEED ?? 0);
 const SEEDS = Array.from({ length: Number(process.env.SEEDS ?? 500) }, (_, at) => FIRST + at);
 const RULES: Rules = {
   ...covariateRules,
+  ...dayRules,
   ...ledgerRules,
   ...soundnessRules,
   ...subgroupRules,

@@ -42,6 +42,7 @@ function wrong(change: Partial<CellTable>): string[] {
       per: null,
       x: null,
     })),
+    since: null,
     quantile: null,
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null, covariate: null } as unknown as MetricCells;

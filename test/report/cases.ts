@@ -53,6 +53,7 @@ function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly fl
     checks: [allocationPassed, ...otherChecks.slice(0, 2), duplicatesCaution, ...otherChecks.slice(2)],
     choices: [],
     accruals: [],
+    daysSince: [],
     subgroups: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,

@@ -18,7 +18,16 @@ describe("report.json", () => {
   });
 
   it("has the type that its schema describes, but for the figures of checks, which are open", () => {
-    type Closed = "experiment" | "conclusion" | "flow" | "provenance" | "format" | "changes" | "subgroups" | "accrual";
+    type Closed =
+      | "experiment"
+      | "conclusion"
+      | "flow"
+      | "provenance"
+      | "format"
+      | "changes"
+      | "subgroups"
+      | "accrual"
+      | "sinceEnrolment";
     expectTypeOf<Mutable<Pick<ReportJson, Closed>>>().toEqualTypeOf<Pick<z.infer<typeof reportSchema>, Closed>>();
   });
 
@@ -94,7 +103,9 @@ describe("the JSON Schema", () => {
     expect(schema.$schema).toBe("https://json-schema.org/draft/2020-12/schema");
     expect(schema.additionalProperties).toBe(false);
     expect(schema.required).toEqual(
-      "format experiment conclusion flow checks effects subgroups accrual sensitivity changes provenance".split(" "),
+      "format experiment conclusion flow checks effects subgroups accrual sinceEnrolment sensitivity changes provenance".split(
+        " ",
+      ),
     );
   });
 });

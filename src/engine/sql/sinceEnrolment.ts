@@ -2,7 +2,7 @@ import type { Plan } from "../../plan/types.ts";
 import { FATE, type Layout, type PartLayout, unitLineIds } from "../layout.ts";
 import type { Dialect } from "./dialect.ts";
 import { followUpUs } from "./enrolments.ts";
-import { join, name, type Statement, sql } from "./sql.ts";
+import { double, join, name, type Statement, sql } from "./sql.ts";
 
 const DAY_US = 86_400_000_000n;
 
@@ -66,6 +66,47 @@ export const followedUnits = (values: readonly Statement[]): Statement => sql`
 export function slopes(values: readonly Statement[], days: number): Statement {
   const sums = values.map((value, i) => sql`sum((2 * day - ${days - 1}) * ${value}) AS ${name(`s${i}`)}`);
   return sql`(SELECT ${list([sql`variant`, ...sums])} FROM by_day GROUP BY id, variant)`;
+}
+
+/** A ratio's terms on a day: (2 day - (days - 1)) (a - R b) / mean(b), R and mean(b) of the unit's own arm on that day. */
+export interface DayScore {
+  readonly a: Statement;
+  readonly b: Statement;
+  /** Per variant, per day; null where b adds up to 0. */
+  readonly arms: readonly (readonly ({ readonly ratio: number; readonly meanOfB: number } | null)[])[];
+}
+
+/** The term of a row of by_day; NULL in an arm that lacks a ratio on some day. */
+export function dayTerm({ a, b, arms }: DayScore, days: number, dialect: Dialect): Statement {
+  const cases = arms.flatMap((own, variant) => {
+    const known = own.filter((day) => day !== null);
+    if (known.length < days) return [];
+    const ofDay = (pick: (day: (typeof known)[number]) => number) =>
+      join(
+        known.map((day, d) => sql`WHEN ${d} THEN ${double(pick(day))}`),
+        "\n",
+      );
+    const ratio = sql`CASE day ${ofDay((day) => day.ratio)} END`;
+    const meanOfB = sql`CASE day ${ofDay((day) => day.meanOfB)} END`;
+    return [
+      sql`WHEN ${variant} THEN (2 * day - ${days - 1}) * (((${dialect.toDouble(a)}) - ${ratio} * (${dialect.toDouble(b)})) / ${meanOfB})`,
+    ];
+  });
+  return cases.length === 0 ? sql`CAST(NULL AS DOUBLE)` : sql`CASE variant ${join(cases, "\n")} END`;
+}
+
+/**
+ * One row a unit: s<i>, the sum of a term over days, rounded to 2^-62 of a power of two: whole numbers add up to the same
+ * in any order, doubles would not.
+ * @param reach powers of two that no sum of a unit goes beyond
+ */
+export function scoreSlopes(terms: readonly Statement[], reach: readonly number[]): Statement {
+  const sums = terms.map((_, i) => {
+    const unit = double((reach[i] ?? 1) * 2 ** -62);
+    return sql`CAST(sum(CAST(floor(${name(`t${i}`)} / ${unit} + 0.5) AS BIGINT)) AS DOUBLE) * ${unit} AS ${name(`s${i}`)}`;
+  });
+  const columns = terms.map((term, i) => sql`${term} AS ${name(`t${i}`)}`);
+  return sql`(SELECT ${list([sql`variant`, ...sums])} FROM (SELECT ${list([sql`id`, sql`variant`, ...columns])} FROM by_day) GROUP BY id, variant)`;
 }
 
 function layoutOf(layout: Layout, part: number): PartLayout {
