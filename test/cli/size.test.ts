@@ -42,7 +42,15 @@ In the plan: planned: {units: 94068}`,
     expect((await command("--share 0.65 --worthwhile 0.2")).stdout).toContain(
       "  70 units with the control and with each",
     );
-    expect((await command("--mean 1 --sd 0.1 --worthwhile 0.05")).stdout).toContain("  63 units with the control and");
+    const { stdout } = await command("--mean 1 --sd 0.1 --worthwhile 0.05");
+    expect(stdout).toContain("  63 units with the control and");
+    expect(stdout).toContain("\n  under 200 in a group Student\u2019s t asks for about one more in each\n");
+  });
+
+  it("says where so few leave the normal curve, on which the size rests", async () => {
+    expect((await command("--share 5% --worthwhile 0.15")).stdout).toContain("  a rough size: with under 10 events in");
+    expect((await command("--share 95% --margin 0.2")).stdout).toContain("  a rough size");
+    expect((await command("--share 50% --worthwhile 0.15")).stdout).not.toContain("rough");
   });
 
   // R 4.2.2 with mvtnorm 1.1-3: Dunnett's value c by uniroot of 1 - pmvnorm(Miwa(2048)) = .05 at the correlation

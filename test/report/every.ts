@@ -2,7 +2,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
-import { hostile } from "./hostile.ts";
+import { hostile, hostileMeanwhile } from "./hostile.ts";
 import { atALook, meanwhile } from "./meanwhile.ts";
 import { quantiles } from "./quantiles.ts";
 
@@ -20,4 +20,5 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["incidents", meanwhile],
   ["an interim look", atALook],
   ["hostile", hostile],
+  ["hostile incidents", hostileMeanwhile],
 ];
