@@ -154,10 +154,13 @@ function unitNotes({ normality }: Effect, { unitCalled: { one, many } }: Plan, u
   return [`${enough} ${rules}`, ...single];
 }
 
+/** Beyond it the limits of an early look would stand at the drawing's edge, or past it. */
+const FARTHEST_DRAWN = 4.6;
+
 async function figure(effect: Effect, plan: Plan, id: string): Promise<SamplingFigure | null> {
   const shown = drawnRows(effect.resampled);
   const critical = effect.normality?.critical;
-  if (critical === undefined || shown.length === 0) return null;
+  if (critical === undefined || critical > FARTHEST_DRAWN || shown.length === 0) return null;
   const { many } = plan.unitCalled;
   const limit = fixed(critical, 2);
   const bootstrap = effect.resampled?.bootstrap;
