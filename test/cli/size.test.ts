@@ -1,3 +1,4 @@
+import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { run } from "../../src/cli/program.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
@@ -86,6 +87,15 @@ In the plan: planned: {units: 235079}`);
   2.5% more than with a single look (211,104), for 5 looks at 20%, 40%, 60%, 80% and 100%:
   the last is held to 2.03 standard errors, a single one to 1.96
 `);
+  });
+
+  it("prints what the README says of its example", async () => {
+    const readme = readFileSync(new URL("../../README.md", import.meta.url), "utf8").replace(/\s+/g, " ");
+    const [, line = "", units = "", days = ""] =
+      /`closeout size ([^`]*)` asks for .*?: ([\d,]+) units in each group, (\d+) days\./.exec(readme) ?? [];
+    const { stdout } = await command(line);
+    expect(stdout).toContain(`  ${units} units with the control and with each variant,`);
+    expect(stdout).toContain(`  ${days} days (2 weeks) of enrolment`);
   });
 
   it("prints a line that a plan takes as it stands", async () => {
