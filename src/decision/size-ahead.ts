@@ -10,6 +10,7 @@ import {
   sizing,
 } from "../stats/index.ts";
 import type { Absent } from "../stats/types.ts";
+import { planPercent } from "../words/index.ts";
 
 /** What is known of a test to come, and what it is to show (METHODS 4, sizing ahead). */
 export interface SizeQuestion {
@@ -58,7 +59,7 @@ export function sizeAhead(question: SizeQuestion): SizeAnswer | { readonly probl
   const expected = asked.kind === "worthwhile" && asked.expected !== null ? amountOf(asked.expected, level) : null;
   const distance = asked.kind === "worthwhile" && expected !== null ? beyondWorthwhile(amount, expected) : amount;
   const effect = asked.kind === "margin" ? 0 : signed(question, expected ?? amount);
-  const problems = [...isAway(distance), ...isOutside(question, amount, expected)];
+  const problems = [...isAway(distance), ...isOutside(question, amount, expected), ...isByChance(question)];
   if (isAbsent(distance) || problems.length > 0) return { problems };
   const ahead: Ahead = {
     variances: variancesOf(level, effect, allocation.length - 1),
@@ -107,6 +108,11 @@ function isAway(distance: number | Absent): string[] {
   return isAbsent(distance)
     ? ["--expected is to be larger than --worthwhile: a gain that just reaches it is never shown to go beyond."]
     : [];
+}
+
+function isByChance({ confidence, power }: SizeQuestion): string[] {
+  const chance = (1 - confidence) / 2;
+  return power > chance ? [] : [`--power is to be above ${planPercent(chance)}: so often chance alone shows a gain.`];
 }
 
 function isOutside(question: SizeQuestion, amount: number, expected: number | null): string[] {

@@ -11,6 +11,7 @@ export function sizeText(question: SizeQuestion, answer: SizeAnswer): string {
     `  ${unitsText(answer.units)}, ${count(total)} in all`,
     ...daysLines(question, answer),
     ...looksLines(question, answer),
+    ...roughLines(question, answer),
     "",
     `In the plan: planned: {units: ${total}}`,
   ].join("\n");
@@ -78,4 +79,15 @@ function looksLines({ looks }: SizeQuestion, { single, critical, total }: SizeAn
     `  ${more} than with a single look (${count(single.total)}), for ${looks.planned.length} looks at ${list(looks.planned.map(planPercent))}:`,
     `  the last is held to ${z(critical)} standard errors, a single one to ${z(single.critical)}`,
   ];
+}
+
+/** Where the analysis of so few leaves the normal curve, on which the size rests. */
+function roughLines({ level }: SizeQuestion, { units }: SizeAnswer): string[] {
+  const [control = 0] = units;
+  if (level.kind === "mean")
+    return Math.min(...units) < 200 ? ["  under 200 in a group Student\u2019s t asks for about one more in each"] : [];
+  const fewest = Math.min(level.share, 1 - level.share) * control;
+  return fewest < 10
+    ? ["  a rough size: with under 10 events in the control, or under 10 units without, the score interval counts"]
+    : [];
 }

@@ -54,7 +54,7 @@ export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
 export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
 export { relativeByEnds } from "./relative-by-ends.ts";
 export { type Resampled, resampled } from "./resampled.ts";
-export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
+export { DRAWS, DRAWS_OF_SECONDARY, drawsReach, isNotDrawn, type NotDrawn } from "./resampling.ts";
 export { type Counts, counts } from "./share.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
 export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";

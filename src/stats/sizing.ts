@@ -46,7 +46,8 @@ export function sizing({ variances, allocation, distance, alpha, power, looks }:
   const critical = looks === undefined ? criticalOfSimultaneous(control, variants, alpha) : lookCritical(looks, own);
   const errors = looks === undefined ? detectable(critical, power, 1) : driftOfLooks(looks, own, power);
   const needed = Math.max(...variants.map((variant) => (errors / distance) ** 2 * (control + variant)));
-  const units = shares.map((share) => Math.ceil(needed * share));
+  // One unit alone has no spread to be judged by.
+  const units = shares.map((share) => Math.max(2, Math.ceil(needed * share)));
   return { critical, units, total: units.reduce((sum, n) => sum + n, 0) };
 }
 

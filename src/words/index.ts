@@ -20,7 +20,7 @@ export {
   signedEstimate,
   signedInterval,
 } from "./interval.ts";
-export { capital, list, plural, quoted } from "./nouns.ts";
+export { asSentence, capital, list, plural, quoted } from "./nouns.ts";
 export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
 export { percent, planPercent, signedPercent } from "./percent.ts";
 export { percentile } from "./percentile.ts";

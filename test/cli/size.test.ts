@@ -1,3 +1,4 @@
+import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { run } from "../../src/cli/program.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
@@ -42,7 +43,15 @@ In the plan: planned: {units: 94068}`,
     expect((await command("--share 0.65 --worthwhile 0.2")).stdout).toContain(
       "  70 units with the control and with each",
     );
-    expect((await command("--mean 1 --sd 0.1 --worthwhile 0.05")).stdout).toContain("  63 units with the control and");
+    const { stdout } = await command("--mean 1 --sd 0.1 --worthwhile 0.05");
+    expect(stdout).toContain("  63 units with the control and");
+    expect(stdout).toContain("\n  under 200 in a group Student\u2019s t asks for about one more in each\n");
+  });
+
+  it("says where so few leave the normal curve, on which the size rests", async () => {
+    expect((await command("--share 5% --worthwhile 0.15")).stdout).toContain("  a rough size: with under 10 events in");
+    expect((await command("--share 95% --margin 0.2")).stdout).toContain("  a rough size");
+    expect((await command("--share 50% --worthwhile 0.15")).stdout).not.toContain("rough");
   });
 
   // R 4.2.2 with mvtnorm 1.1-3: Dunnett's value c by uniroot of 1 - pmvnorm(Miwa(2048)) = .05 at the correlation
@@ -80,6 +89,15 @@ In the plan: planned: {units: 235079}`);
 `);
   });
 
+  it("prints what the README says of its example", async () => {
+    const readme = readFileSync(new URL("../../README.md", import.meta.url), "utf8").replace(/\s+/g, " ");
+    const [, line = "", units = "", days = ""] =
+      /`closeout size ([^`]*)` asks for .*?: ([\d,]+) units in each group, (\d+) days\./.exec(readme) ?? [];
+    const { stdout } = await command(line);
+    expect(stdout).toContain(`  ${units} units with the control and with each variant,`);
+    expect(stdout).toContain(`  ${days} days (2 weeks) of enrolment`);
+  });
+
   it("prints a line that a plan takes as it stands", async () => {
     const [, planned = ""] = /In the plan: (.*)/.exec((await command("--share 12% --worthwhile 5%")).stdout) ?? [];
     expect(loadPlan(planText({ planned }))).toMatchObject({ plan: { plannedUnits: 94068 } });
@@ -102,6 +120,7 @@ In the plan: planned: {units: 235079}`);
     ["--share 12% --worthwhile 5% --allocation 50%:1", "--allocation 50%:1: expected two parts or more, such as 1:1."],
     ["--share 12% --worthwhile 5% --allocation 1", "--allocation 1: expected two parts or more, such as 1:1."],
     ["--share 12% --worthwhile 5% --power 1", "--power 1: expected a share between 0 and 1"],
+    ["--share 12% --worthwhile 5% --power 2%", "--power is to be above 2.5%: so often chance alone shows a gain."],
     ["--share 12% --worthwhile 5% --a-day 0", "--a-day 0: expected a number above 0."],
     ["--share 12% --worthwhile 5% --looks 50%,80%", "--looks 50%,80%: expected 2 to 10 rising shares"],
     ["--share 12% --worthwhile 5% --looks 80%,50%,1", "expected 2 to 10 rising shares"],

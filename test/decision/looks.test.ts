@@ -10,6 +10,7 @@ import {
 import { looksSoFar } from "../../src/decision/looks.ts";
 import type { Effect } from "../../src/decision/types.ts";
 import type { Looks, Plan } from "../../src/plan/types.ts";
+import { holm, pOfLooks } from "../../src/stats/index.ts";
 import { metricOf, planOf, reductionOf, variantsOf } from "../checks/make.ts";
 import { contrastOf, effectOf, FERRY } from "./make.ts";
 import { share } from "./make-arms.ts";
@@ -81,6 +82,16 @@ describe("planned looks", () => {
         expect(effect?.pAdjusted).toBeGreaterThan(p ?? 1);
       }
     }
+  });
+
+  it("show beside it Holm's p over the variants, of p that allow for the looks", () => {
+    const looks = looksAt(2, { spending: "pocock" });
+    const plan = planOf({ metrics: [PRIMARY], looks, variants: variantsOf({ list: 1, calendar: 1, map: 1 }) });
+    const found = effects(plan, [[share(6000), share(6250), share(6300)]]);
+    const ps = found.map(({ contrast }) => contrast.difference.p ?? 1);
+    const alone = ps.map((p) => pOfLooks({ shares: [0.25, 0.5], spending: "pocock", isLast: false }, p));
+    expect(found.map(({ pHolm }) => pHolm)).toEqual(holm(alone));
+    expect(found.map(({ pAdjusted }) => pAdjusted)).toEqual(alone.map((p) => Math.min(1, 2 * p)));
   });
 
   it("take the share of the planned units that was analysed, and of the looks before their own in the plan", () => {

@@ -88,7 +88,14 @@ describe("the cells under other reasonable choices", () => {
 
   it("came by every choice, of a value alone and of a pair", () => {
     const logs = [...CHOICES.filter((choice) => !choice.startsWith("cap-")), "without-incident"];
-    const tables = ["no-cap", "cap-0.99", "cap-0.999", "other-way-in-two-variants"];
+    const tables = [
+      "no-cap",
+      "cap-0.99",
+      "cap-0.999",
+      "other-way-in-two-variants",
+      "without-first-day",
+      "without-incident",
+    ];
     const wanted = [
       ...["log: log", "table: log"],
       ...logs.flatMap((choice) => [`log: ${choice}`, `log: ${choice} of a pair`]),

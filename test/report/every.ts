@@ -2,7 +2,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
-import { hostile } from "./hostile.ts";
+import { hostile, hostileMeanwhile } from "./hostile.ts";
 import { atALook, meanwhile } from "./meanwhile.ts";
 import { quantiles } from "./quantiles.ts";
 import { secondRun, thirdRun, undecidableRerun } from "./rerun-case.ts";
@@ -24,4 +24,5 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["a second run", secondRun],
   ["a third run with another rule", thirdRun],
   ["a rerun of which nothing can be decided", undecidableRerun],
+  ["hostile incidents", hostileMeanwhile],
 ];

@@ -12,7 +12,7 @@ describe("incidents in the report", () => {
   it("stand at the end of section 3 with when, where, what happened, how many enrolled then, and what depends on it", async () => {
     const text = await section(meanwhile, "trust");
     expect(text).toContain(
-      'payment outage From 2026-03-04 08:00, before 2026-03-05; only where "country" is as the plan says. cards were refused. 41,150 visitors with "list" and 41,150 with "calendar" enrolled during it. The decision depends on it: without them it would be not settled.',
+      'payment outage From 2026-03-04 08:00, before 2026-03-05; only where "country" is as the plan says. Cards were refused. 41,150 visitors with "list" and 41,150 with "calendar" enrolled during it. The decision depends on it: without them it would be not settled.',
     );
     expect(text).toMatch(
       /strike From 2026-03-04 08:00, before 2026-03-05\. 2,120 visitors .* The decision does not depend on it/,

@@ -128,6 +128,11 @@ describe("units for a test to come", () => {
     expect([two.critical, two.units[0]]).toEqual([half.critical, half.units[0]]);
   });
 
+  it("are never under two in an arm, for one alone has no spread", () => {
+    const variances = meanVariances(1, 1);
+    expect(sizing({ variances, allocation: [1, 9], distance: 1e9, alpha: 0.05, power: 0.8 }).units).toEqual([2, 2]);
+  });
+
   it("take as many whole days as they need", () => {
     expect(enrolmentDays(1000, 100)).toBe(10);
     expect(enrolmentDays(1001, 100)).toBe(11);

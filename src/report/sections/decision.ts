@@ -11,7 +11,7 @@ import {
   otherIntervalSentence,
 } from "../../decision/index.ts";
 import type { Plan } from "../../plan/types.ts";
-import { count, list, plural } from "../../words/index.ts";
+import { asSentence, count, list, plural } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
 import { mostImportant, tallyText } from "./checks.ts";
 import { type ForestTable, forestTable } from "./forest.ts";
@@ -91,16 +91,11 @@ export function answers(inputs: ReportInputs): Answer[] {
     ...(inputs.plan.incidents.length === 0
       ? []
       : [{ question: "What happened meanwhile:", answer: incidentsInShort(outcomesOf(inputs), isDecided(inputs)) }]),
-    ...(limits === null ? [] : [{ question: "Not answered by this test:", answer: ended(limits) }]),
+    ...(limits === null ? [] : [{ question: "Not answered by this test:", answer: asSentence(limits) }]),
   ];
 }
 
 const isDecided = ({ conclusion }: ReportInputs) => conclusion.decision !== "undecidable";
-
-/** A text from the plan as a sentence of the page. */
-function ended(text: string): string {
-  return /[.!?\u2026]$/.test(text.trimEnd()) ? text : `${text.trimEnd()}.`;
-}
 
 /** The tally, and the caution that matters most; what stops a decision is told above it already. */
 function trustText(inputs: ReportInputs): string {

@@ -1,6 +1,6 @@
 import { type IncidentOutcome, incidentOutcomes, incidentSentences } from "../../decision/index.ts";
 import type { Incident } from "../../plan/types.ts";
-import { list, quoted } from "../../words/index.ts";
+import { asSentence, capital, list, quoted } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
 
 /** The end of section 3: what happened while units enrolled, and whether the decision depends on it. */
@@ -21,7 +21,7 @@ export function incidentTexts(inputs: ReportInputs): IncidentText[] {
   return outcomesOf(inputs).map((outcome) => ({
     name: outcome.incident.name,
     when: whenAndWhere(outcome.incident),
-    what: outcome.incident.what ?? "",
+    what: outcome.incident.what === null ? "" : capital(asSentence(outcome.incident.what)),
     sentences: incidentSentences(inputs.plan, outcome, isDecided).join(" "),
   }));
 }
