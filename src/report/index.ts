@@ -13,7 +13,7 @@ export { type ComparedReports, comparisonPage, comparisonText } from "./comparis
 // the report's parts, for tests and for whoever needs one alone
 export { effectsCsv } from "./csv.ts";
 export type { Kept } from "./folder.ts";
-export { fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
+export { FROM_CELLS, fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
 export { reportJson } from "./json.ts";
 export { firstPlanOf, type PreviousReport, previousReport, runOf } from "./previous.ts";
 export { reportJsonSchema } from "./schema.ts";

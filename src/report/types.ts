@@ -118,6 +118,10 @@ export interface ProvenanceJson {
     readonly rows: number;
   }[];
   readonly engine: { readonly name: string; readonly version: string };
+  /** SHA-256 of cells.json; null where none was kept. */
+  readonly cells: string | null;
+  /** Made from cells that an earlier report had kept, without reading the log. */
+  readonly fromCells: boolean;
 }
 
 /** Everything a report is made of: it reads no clock, no file of the log and no path of the machine. */
@@ -135,6 +139,10 @@ export interface ReportInputs {
   /** One an effect, in their order. */
   readonly choices: readonly Choices[];
   readonly conclusion: Conclusion;
+  /** The log was not read: the figures are of cells that an earlier report had kept. */
+  readonly fromCells?: boolean | undefined;
+  /** Of cells.json beside the report. */
+  readonly cellsSha256?: string | undefined;
   /** Of a report that replaces an earlier one. */
   readonly rerun?: Rerun | undefined;
 }
@@ -148,7 +156,7 @@ export interface ReportFiles {
   readonly terminal: (paths: TerminalPaths) => string;
 }
 export interface ReportFile {
-  readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md";
+  readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md" | "cells.json";
   readonly text: string;
 }
 /** Where the reader finds the files, as the terminal is to print it. */
