@@ -9,7 +9,7 @@ const UNITS_AT_LEAST = 10;
  * more, and only those that draws are made from; all else is one row an arm.
  * @param said what the buckets say, kept in their place where they go
  */
-export function coarseCells(metric: Metric, cells: MetricCells, said: readonly KeptBuckets[]): MetricCells {
+export function coarseCells(metric: Metric, cells: MetricCells, said: () => readonly KeptBuckets[]): MetricCells {
   const { ratio, covariate } = cells;
   const drawnFrom = [
     ...(ratio === null ? [cells.of] : [ratio.joint]),
@@ -27,7 +27,7 @@ export function coarseCells(metric: Metric, cells: MetricCells, said: readonly K
         ? null
         : { per: byArm(ratio.per, CELL_SUMS), score: byArm(ratio.score, SCORE_SUMS), joint: joint(ratio.joint) },
     covariate: covariate === null ? null : { x: byArm(covariate.x, CELL_SUMS), joint: joint(covariate.joint) },
-    ...(stay || isQuantile ? {} : { kept: said }),
+    ...(stay || isQuantile ? {} : { kept: said() }),
   };
 }
 

@@ -38,7 +38,7 @@ export function cellsFile(
       metrics: plan.metrics.map((metric, m) => {
         const cells = reduction.metrics[m];
         if (cells === undefined) throw new Error(`no cells for metric ${metric.name}`);
-        return coarseCells(metric, cells, cells.kept ?? saidByBuckets(plan, m, cells, effects));
+        return coarseCells(metric, cells, () => cells.kept ?? saidByBuckets(plan, m, cells, effects));
       }),
     },
     answers: {
@@ -113,10 +113,7 @@ function saidByBuckets(plan: Plan, m: number, cells: MetricCells, effects: reado
   const metric = plan.metrics[m];
   const of = metric === undefined ? null : bucketsOf(metric, cells, plan.variants.length);
   if (metric === undefined || of === null) return [];
-  const places = plan.variants.map((_, v) => v);
-  const pairs = places.flatMap((control) =>
-    places.flatMap((variant) => (control === variant ? [] : [{ control, variant }])),
-  );
+  const pairs = comparedPairs(plan, m);
   return pairs.flatMap(({ control, variant }) =>
     (cells.covariate === null ? [false] : [false, true]).map((isAdjusted) => ({
       control,
@@ -126,6 +123,18 @@ function saidByBuckets(plan: Plan, m: number, cells: MetricCells, effects: reado
       drawn: drawnFor(plan, metric.name, control, variant, isAdjusted, effects),
     })),
   );
+}
+
+/** The control with each variant; on the first primary the variants with each other too, for the best two of several. */
+function comparedPairs(
+  { variants, metrics }: Plan,
+  m: number,
+): { readonly control: number; readonly variant: number }[] {
+  const places = variants.map((_, v) => v);
+  const control = variants.findIndex(({ isControl }) => isControl);
+  const isFirst = metrics.findIndex(({ role }) => role === "primary") === m;
+  const from = isFirst ? places : [control];
+  return from.flatMap((a) => places.filter((v) => v !== a && v !== control).map((b) => ({ control: a, variant: b })));
 }
 
 function drawnFor(

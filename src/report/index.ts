@@ -33,8 +33,8 @@ export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {
       { name: "report.html", text: html },
       { name: "report.json", text: `${JSON.stringify(json, null, 2)}\n` },
       { name: "effects.csv", text: effectsCsv(json.effects) },
-      { name: "summary.md", text: summaryMd(inputs) },
+      { name: "summary.md", text: summaryMd(inputs, json.changes) },
     ],
-    terminal: (paths) => terminalText(inputs, paths),
+    terminal: (paths) => terminalText(inputs, paths, json.changes),
   };
 }

@@ -127,3 +127,16 @@ describe("cells.json of a quantile and of a rerun", () => {
     on.remove();
   });
 });
+
+it("keeps what the best two of several variants need of each other", async () => {
+  const on = bench();
+  const three = ["old", "new", "third"].flatMap((sign, s) =>
+    Array.from({ length: 400 }, (_, i) => `${sign}${i},${sign},${Number(i % 10 < 2 + 2 * s)},${(i * 7) % 43},0`),
+  );
+  writeFileSync(join(on.folder, "log.csv"), ["visitor,sign,stopped,minutes,is_staff", ...three].join("\n"));
+  const plan = `${PLAN.replace("  - {name: new}\n", "  - {name: new}\n  - {name: third}\n")}decision: {interval: skew-corrected}\n`;
+  const { conclusion } = await reported(on, plan);
+  expect(conclusion.reasons.join(" ")).toContain("Between the two");
+  expect(await verify(join(on.report, "report.html"), { cells: true })).toMatchObject({ status: 0 });
+  on.remove();
+});

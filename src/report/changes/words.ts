@@ -78,6 +78,23 @@ export function logText(log: ChangesJson["log"]): string {
   return `The log is another: ${list(parts)}.`;
 }
 
+const MOST_TOLD = 3;
+
+/** 'the filter "staff accounts" was added (staff book for training). The log is the same.' */
+export function whatChanged({ plan: all, log }: Pick<ChangesJson, "plan" | "log">, plan: Plan): string {
+  const counted = all.filter(({ counts }) => counts);
+  const told = counted.slice(0, MOST_TOLD).map((change) => changeText(change, plan));
+  const more = counted.length - told.length;
+  const parts = more > 0 ? [...told, `${more} more (section 2)`] : told;
+  const said =
+    counted.length > 0
+      ? `${parts.join("; ")}.`
+      : all.length > 0
+        ? "only texts of the plan, on which no figure depends."
+        : "nothing in the plan.";
+  return `${said} ${logText(log)}`;
+}
+
 /**
  * How an estimate is shown before and after: in percent where both reports have it so, else as a difference; as a
  * difference also where the plan states its amount in the metric's own unit. Drawn in percent in any case.
