@@ -1,8 +1,11 @@
 /** The library entry: a plan in, a decision report out. */
 import { readFile } from "node:fs/promises";
 import path from "node:path";
-import { decisionReport, judged, measure } from "./compute.ts";
+import { decisionReport } from "./compute.ts";
 import { type Progress, UnusableLog } from "./engine/index.ts";
+import { judged } from "./judge.ts";
+import { measuredFromFile } from "./kept/from-file.ts";
+import { measure } from "./measure.ts";
 import { loadPlan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
@@ -24,6 +27,8 @@ export interface CloseoutOptions {
   readonly out?: string | undefined;
   /** The report.json of the report that this one replaces, or "none"; without it the one in the folder. */
   readonly previous?: string | undefined;
+  /** The cells.json of an earlier report: its figures are taken, and the log is not read. */
+  readonly fromCells?: string | undefined;
   readonly threads?: number | undefined;
   /** Writes figures/*.svg, page-one.html and decision.csv too. */
   readonly figures?: boolean | undefined;
@@ -63,22 +68,29 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   if (folder !== null && "refused" in folder) return { status: 2, text: folder.refused };
   try {
     const planFolder = path.dirname(path.resolve(planPath));
-    const found = await measure(plan, loaded.source, planFolder, {
-      ...options,
-      rejectsTo: folder?.staged("rejects.csv"),
-    });
+    const fromCells = options.fromCells !== undefined;
+    const found =
+      plan !== null && options.fromCells !== undefined
+        ? await measuredFromFile(plan, planText, options.fromCells)
+        : await measure(plan, loaded.source, planFolder, { ...options, rejectsTo: folder?.staged("rejects.csv") });
+    if ("refused" in found) return { status: 2, text: found.refused };
     if (plan === null || folder === null || "problems" in found) {
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const replaced = await replacedReport(folder, options.previous, plan.experiment, planText, found.reduction);
+    const replaced = await replacedReport(
+      folder,
+      options.previous,
+      plan.experiment,
+      planText,
+      found.reduction,
+      fromCells,
+    );
     if ("refused" in replaced) return { status: 2, text: replaced.refused };
     const judgement = judged(plan, found);
-    const rerun =
-      replaced.previous === null
-        ? null
-        : await rerunOf(replaced.previous, { plan, planText, planFolder, measured: found, judged: judgement }, options);
-    const rendered = await decisionReport(plan, planText, found, judgement, rerun);
+    const now = { plan, planText, planFolder, measured: found, judged: judgement, fromCells };
+    const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
+    const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
     options.signal?.throwIfAborted();
     const kept = await folder.keep(rendered.files, replaced.history);
     const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];

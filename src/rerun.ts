@@ -22,10 +22,11 @@ export async function replacedReport(
   experiment: string,
   planText: string,
   reduction: Reduction,
+  fromCells: boolean,
 ): Promise<Replaced | { readonly refused: string }> {
   const lying = folder.earlier === null ? null : previousReport(folder.earlier);
   if (folder.earlier !== null && lying === null && named === undefined) return { refused: notComparable(folder.shown) };
-  const isSame = lying !== null && sameSource(lying, planText, reduction);
+  const isSame = lying !== null && sameSource(lying, planText, reduction, fromCells);
   const history = lying === null || isSame ? [] : [{ name: keptName(runOf(lying.report), lying.sha256), json: null }];
   if (named === "none") return { previous: null, history };
   if (named !== undefined) return namedReport(named, experiment, history);
@@ -57,12 +58,18 @@ async function namedReport(
   return { previous, history: history.some((one) => one.name === name) ? history : [...history, { name, json }] };
 }
 
-function sameSource({ report: { provenance } }: PreviousReport, planText: string, reduction: Reduction): boolean {
+function sameSource(
+  { report: { provenance } }: PreviousReport,
+  planText: string,
+  reduction: Reduction,
+  fromCells: boolean,
+): boolean {
   const files = (of: readonly { readonly name: string; readonly sha256: string }[]) =>
     JSON.stringify(of.map(({ name, sha256 }) => [name, sha256]));
   return (
     provenance.plan.sha256 === sha256(planText) &&
     provenance.version === version &&
+    provenance.fromCells === fromCells &&
     provenance.engine.version === reduction.engine.version &&
     files(provenance.inputs) === files(reduction.inputs) &&
     files(provenance.lists) === files(reduction.lists)

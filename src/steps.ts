@@ -1,7 +1,8 @@
 import { performance } from "node:perf_hooks";
-import { type Judged, judged, type Measured, measure } from "./compute.ts";
 import { deciding, type Effect } from "./decision/index.ts";
 import { type ReduceOptions, UnusableLog } from "./engine/index.ts";
+import { type Judged, judged } from "./judge.ts";
+import { type Measured, measure, measuredBy } from "./measure.ts";
 import {
   combinedPlan,
   loadPlan,
@@ -20,6 +21,8 @@ export interface Now {
   readonly planFolder: string;
   readonly measured: Measured;
   readonly judged: Judged;
+  /** The log is not at hand: steps that need it are not computed. */
+  readonly fromCells?: boolean;
 }
 
 /** What a report says of the one that it replaces. Several changes cost a pass over the log for each step between them. */
@@ -62,8 +65,8 @@ async function figuresOf(
   options: ReduceOptions,
 ): Promise<ReadonlyMap<string, StepJson | null>> {
   const loaded = [...new Set(texts)].map((text) => ({ text, plan: text === now.planText ? now : planOf(text) }));
-  const passes = new Map<string, Measured | null>([[reductionOf(now.plan), now.measured]]);
-  const needed = new Set(loaded.flatMap(({ plan }) => (plan === null ? [] : [reductionOf(plan.plan)])));
+  const passes = new Map<string, Measured | null>([[measuredBy(now.plan), now.measured]]);
+  const needed = new Set(loaded.flatMap(({ plan }) => (plan === null ? [] : [measuredBy(plan.plan)])));
   const total = needed.size - 1;
   const figures = new Map<string, StepJson | null>();
   const began = performance.now();
@@ -72,12 +75,12 @@ async function figuresOf(
       figures.set(text, null);
       continue;
     }
-    const key = reductionOf(plan.plan);
-    if (!passes.has(key) && "source" in plan) {
+    const key = measuredBy(plan.plan);
+    if (!passes.has(key) && "source" in plan && now.fromCells !== true) {
       const done = passes.size - 1;
       options.signal?.throwIfAborted();
       options.progress?.({ stage: stageText(done, total, performance.now() - began), rows: 0, share: done / total });
-      passes.set(key, await measuredBy(plan.plan, plan.source, now.planFolder, options));
+      passes.set(key, await measuredOf(plan.plan, plan.source, now.planFolder, options));
     }
     const measured = passes.get(key) ?? null;
     figures.set(text, measured === null ? null : stepJson(plan.plan, measured, judged(plan.plan, measured)));
@@ -90,7 +93,7 @@ function planOf(text: string): { readonly plan: Plan; readonly source: PlanSourc
   return "plan" in loaded ? loaded : null;
 }
 
-async function measuredBy(
+async function measuredOf(
   plan: Plan,
   source: PlanSource,
   folder: string,
@@ -103,16 +106,6 @@ async function measuredBy(
     if (error instanceof UnusableLog && signal?.aborted !== true) return null;
     throw error;
   }
-}
-
-/** Plans that differ in nothing else give the same sums of the same log. */
-function reductionOf(plan: Plan): string {
-  const hasQuantile = plan.metrics.some(({ summary }) => summary === "quantile");
-  const { texts: _texts, plannedUnits: _units, forecast: _forecast, registered: _registered, decision, ...rest } = plan;
-  const metrics = plan.metrics.map(({ worthwhile: _w, expected: _e, margin: _m, goodIs: _g, ...metric }) => metric);
-  // which ranks of a quantile are asked for hangs on the confidence, which a look narrows by how far it reaches
-  const asked = hasQuantile ? [decision, plan.plannedUnits] : null;
-  return JSON.stringify({ ...rest, metrics, asked }, (_, value) => (typeof value === "bigint" ? String(value) : value));
 }
 
 function stepJson({ variants }: Plan, { reduction }: Measured, { effects, conclusion }: Judged): StepJson {

@@ -9,7 +9,8 @@ import type { Check, CheckPart } from "./types.ts";
  * @param changes since the first report, null in a first report; texts without effect on any number are not judged
  */
 export function planChanged(plan: Plan, changes: readonly PlanChange[] | null): Check | null {
-  const judged = changes?.filter(({ counts }) => counts) ?? [];
+  // the next of the planned looks is no change of plan
+  const judged = changes?.filter(({ counts, place }) => counts && place !== "looks: at") ?? [];
   const rule = judged.filter(({ decides }) => decides);
   const findings = [...rule, ...judged.filter(({ decides }) => !decides)].map(finding);
   const since =

@@ -77,6 +77,10 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
       "--figures",
       "also write each figure as SVG, page one alone, and decision.csv, a line for a log of decisions",
     )
+    .option(
+      "--from-cells <FILE>",
+      "take the figures of an earlier report's cells.json, to see another confidence or limit",
+    )
     .option("--threads <N>", "how many processor cores to use (default: all)")
     .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
     .option("--debug", "on a fault of closeout itself, print where it happened")
@@ -93,13 +97,24 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     )
     .argument("REPORT", "the report.html, or the folder that it lies in")
     .usage("REPORT [options]")
+    .option(
+      "--cells",
+      "recompute from cells.json beside the report, without the log, and say what that leaves unproven",
+    )
     .option("--base <DIR>", "the folder that the plan lay in (default: looked for above the report)")
     .option("--threads <N>", "how many processor cores to use (default: all)")
     .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
     .option("--debug", "on a fault of closeout itself, print where it happened")
     .action(async (file: string, options: RawOptions) => {
       const { threads, memory } = readOptions(options, facts(program, "verify"));
-      end(await verify({ file, options: { base: options.base, threads, memory } }, terminal, await load(), signal));
+      end(
+        await verify(
+          { file, options: { base: options.base, cells: options.cells, threads, memory } },
+          terminal,
+          await load(),
+          signal,
+        ),
+      );
     });
 
   program
@@ -168,6 +183,8 @@ interface RawOptions {
   readonly out?: string;
   readonly previous?: string;
   readonly base?: string;
+  readonly cells?: boolean;
+  readonly fromCells?: string;
   readonly threads?: string;
   readonly memory?: string;
   readonly figures?: boolean;
@@ -185,6 +202,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["o
   if (problems.length > 0) throw wrongArguments(problems.join("\n"), command);
   return {
     ...(raw.out === undefined ? {} : { out: raw.out }),
+    ...(raw.fromCells === undefined ? {} : { fromCells: raw.fromCells }),
     ...(raw.previous === undefined ? {} : { previous: raw.previous }),
     ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
     ...(raw.memory === undefined ? {} : { memory: raw.memory }),

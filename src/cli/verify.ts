@@ -4,7 +4,7 @@ import type { ExitStatus, Terminal } from "./terminal.ts";
 
 export interface VerifyArguments {
   readonly file: string;
-  readonly options: Pick<VerifyOptions, "base" | "threads" | "memory">;
+  readonly options: Pick<VerifyOptions, "base" | "cells" | "threads" | "memory">;
 }
 
 export async function verify(

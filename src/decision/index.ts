@@ -8,6 +8,8 @@ export { type Accrual, type AccrualDay, accruals, UNITS_FOR_ACCRUAL } from "./ac
 export { adjustedSentence, covariateInWords } from "./adjusted-words.ts";
 // what was found, in sentences that page, terminal and summary share
 export { askedSentence } from "./asked.ts";
+// what the cells by bucket say of two arms
+export { bucketsOf } from "./buckets.ts";
 // the same contrasts under other reasonable choices
 export type { ChoiceName, ChoiceRow } from "./choice-rows.ts";
 export { conclusion } from "./conclusion.ts";

@@ -111,6 +111,19 @@ export interface MetricCells {
    * score, of several the one with the smallest pair; x is its ratio's denominator or its covariate.
    */
   readonly ends: readonly (UnitEnds | null)[];
+  /** Only of cells that were kept without their buckets: what the buckets had said, one a pair of arms. */
+  readonly kept?: readonly KeptBuckets[] | undefined;
+}
+
+/** What is known of two arms whose buckets are gone. */
+export interface KeptBuckets {
+  readonly control: number;
+  readonly variant: number;
+  readonly isAdjusted: boolean;
+  /** How far the arms look like one distribution, 1 to 0. */
+  readonly alike: number;
+  /** What was drawn from the buckets, as stats has it, for which critical value; null where nothing was asked for. */
+  readonly drawn: { readonly critical: number; readonly found: unknown } | null;
 }
 
 /** One metric's cells by what divides the analysed units. Quantiles have none. */

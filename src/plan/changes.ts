@@ -21,7 +21,7 @@ export interface PlanChange {
   readonly counts: boolean;
 }
 
-const NAMED = ["variants", "metrics", "filters"];
+const NAMED = ["variants", "metrics", "filters", "incidents"];
 export const TEXTS: readonly string[] = [
   "experiment",
   "question",

@@ -61,8 +61,14 @@ function partsOf(plan: Plan): Record<SealedPart, string> {
       primaries: plan.decision.primaries === "all" ? null : plan.decision.primaries,
       interval: plan.decision.interval === "normal" ? null : plan.decision.interval,
     }),
-    looks: canonical("looks" in plan ? plan.looks : null),
+    looks: canonical(plannedLooks(plan)),
   };
+}
+
+/** Which looks were planned; not which of them this is. */
+function plannedLooks(plan: Plan): object | null {
+  const looks = "looks" in plan ? (plan.looks as object | null) : null;
+  return looks === null ? null : { ...looks, at: null, reached: null };
 }
 
 /** A metric without what is for the reader or for sizing. */

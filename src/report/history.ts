@@ -8,6 +8,9 @@ export const HISTORY = "history";
 /** The words before the fingerprint of the report that a rerun replaces, in section 7: by them it is found again. */
 export const REPLACES = "Replaces the report with the fingerprint";
 
+/** What section 7 says, after "Made from", of a report that was made without the log. */
+export const FROM_CELLS = "cells that an earlier report had kept; the log was not read";
+
 /** The fingerprint of a report: SHA-256 of its report.json, byte for byte. */
 export function fingerprintOf(json: string): string {
   return createHash("sha256").update(json).digest("hex");

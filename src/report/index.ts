@@ -14,7 +14,7 @@ export { type ComparedReports, comparisonPage, comparisonText } from "./comparis
 // the report's parts, for tests and for whoever needs one alone
 export { effectsCsv } from "./csv.ts";
 export type { Kept } from "./folder.ts";
-export { fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
+export { FROM_CELLS, fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
 export { reportJson } from "./json.ts";
 export { firstPlanOf, type PreviousReport, previousReport, runOf } from "./previous.ts";
 export { reportJsonSchema } from "./schema.ts";
@@ -36,9 +36,9 @@ export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {
       { name: "report.html", text: html },
       { name: "report.json", text: jsonText },
       { name: "effects.csv", text: effectsCsv(json.effects) },
-      { name: "summary.md", text: summaryMd(inputs) },
+      { name: "summary.md", text: summaryMd(inputs, json.changes) },
     ],
     extras: () => extraFiles(inputs, whole, jsonText),
-    terminal: (paths) => terminalText(inputs, paths),
+    terminal: (paths) => terminalText(inputs, paths, json.changes),
   };
 }

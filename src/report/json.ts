@@ -35,6 +35,8 @@ export function reportJson(inputs: ReportInputs): ReportJson {
       inputs: reduction.inputs.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
       lists: reduction.lists.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
       engine: { name: reduction.engine.name, version: reduction.engine.version },
+      cells: inputs.cellsSha256 ?? null,
+      fromCells: inputs.fromCells === true,
     },
   };
   const rounded = twelveDigits(report);

@@ -73,6 +73,7 @@ const earlier = z.object({
     inputs: z.array(file),
     lists: z.array(file),
     engine: z.object({ name: z.string(), version: z.string() }),
+    fromCells: z.boolean().default(false),
   }),
 });
 export type EarlierReport = z.infer<typeof earlier>;

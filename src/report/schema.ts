@@ -231,6 +231,8 @@ export const reportSchema = z.strictObject({
     inputs: z.array(file),
     lists: z.array(file),
     engine: z.strictObject({ name: z.string(), version: z.string() }),
+    cells: fingerprint.nullable().describe("SHA-256 of cells.json beside the report."),
+    fromCells: z.boolean().describe("Made from cells that an earlier report had kept, without reading the log."),
   }),
 });
 

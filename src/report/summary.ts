@@ -1,4 +1,6 @@
 import { lookSentences, nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
+import type { ChangesJson } from "./changes/types.ts";
+import { saidBefore, whatChanged } from "./changes/words.ts";
 import { whenText } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
 import type { ReportInputs } from "./types.ts";
@@ -6,7 +8,7 @@ import type { ReportInputs } from "./types.ts";
 const MOST_FOUND = 5;
 
 /** summary.md: the decision in about twelve lines, to paste into a message or a ticket. */
-export function summaryMd(inputs: ReportInputs): string {
+export function summaryMd(inputs: ReportInputs, changes: ChangesJson | null = null): string {
   const { plan, reduction, conclusion } = inputs;
   const when = whenText(plan, reduction);
   const lines = [
@@ -15,6 +17,7 @@ export function summaryMd(inputs: ReportInputs): string {
     `**${plain(conclusion.sentence)}**`,
     "",
     ...sentences(inputs).map((sentence) => `- ${plain(sentence)}`),
+    ...(changes === null ? [] : [`- ${plain(saidBefore(changes))} What changed: ${plain(whatChanged(changes, plan))}`]),
     ...answers(inputs).map(({ question, answer }) => `- ${question} ${plain(answer)}`),
   ];
   return `${lines.join("\n")}\n`;

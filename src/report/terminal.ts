@@ -1,6 +1,8 @@
 import { covariateInWords, type Effect, lookSentences } from "../decision/index.ts";
 import type { Plan } from "../plan/types.ts";
 import { count, list, planPercent, plural } from "../words/index.ts";
+import type { ChangesJson } from "./changes/types.ts";
+import { saidBefore, whatChanged } from "./changes/words.ts";
 import { effectText, verdictText } from "./effect-text.ts";
 import { controlOf } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
@@ -9,7 +11,7 @@ import type { ReportInputs, TerminalPaths } from "./types.ts";
 const WIDTH = 100;
 
 /** The conclusion and a short table, plain lines. Colour, if any, is the command line's. */
-export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string {
+export function terminalText(inputs: ReportInputs, paths: TerminalPaths, changes: ChangesJson | null = null): string {
   const { plan, effects, conclusion, reduction } = inputs;
   const table =
     conclusion.decision === "undecidable" || effects.length === 0 ? [] : [...effectTable(effects, plan), ""];
@@ -30,6 +32,8 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths): string
       "Counted",
       `${count(counted)} of ${plural(reduction.unitsSeen, plan.unitCalled.one, plan.unitCalled.many)}; all ${count(reduction.rowsRead)} rows accounted for`,
     ),
+    ...(changes === null ? [] : labelled("Before", saidBefore(changes))),
+    ...(changes === null ? [] : labelled("Changed", whatChanged(changes, plan))),
     ...labelled("Report", paths.report),
     ...labelled("To paste", paths.summary),
   ]

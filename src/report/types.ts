@@ -193,6 +193,10 @@ export interface ProvenanceJson {
     readonly rows: number;
   }[];
   readonly engine: { readonly name: string; readonly version: string };
+  /** SHA-256 of cells.json; null where none was kept. */
+  readonly cells: string | null;
+  /** Made from cells that an earlier report had kept, without reading the log. */
+  readonly fromCells: boolean;
 }
 
 /** Everything a report is made of: it reads no clock, no file of the log and no path of the machine. */
@@ -214,6 +218,10 @@ export interface ReportInputs {
   readonly daysSince: readonly DaysSince[];
   readonly subgroups: readonly Subgroup[];
   readonly conclusion: Conclusion;
+  /** The log was not read: the figures are of cells that an earlier report had kept. */
+  readonly fromCells?: boolean | undefined;
+  /** Of cells.json beside the report. */
+  readonly cellsSha256?: string | undefined;
   /** Of a report that replaces an earlier one. */
   readonly rerun?: Rerun | undefined;
 }
@@ -229,7 +237,7 @@ export interface ReportFiles {
   readonly terminal: (paths: TerminalPaths) => string;
 }
 export interface ReportFile {
-  readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md";
+  readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md" | "cells.json";
   readonly text: string;
 }
 /** `figures/….svg`, `page-one.html`, `decision.csv`. */

@@ -13,7 +13,7 @@ const UNDEFINED_OVER = 0.01;
 
 /** Why nothing was drawn, or what was drawn is not shown. */
 export interface NotDrawn {
-  readonly notDrawn: "few-units" | "few-events" | "no-spread" | "undefined-draws";
+  readonly notDrawn: "few-units" | "few-events" | "no-spread" | "undefined-draws" | "no-buckets";
 }
 
 export function isNotDrawn<Drawn>(found: Drawn | NotDrawn): found is NotDrawn {

@@ -1,4 +1,4 @@
-import { REPLACES } from "../report/index.ts";
+import { FROM_CELLS, REPLACES } from "../report/index.ts";
 
 /** What a report says of where it came from: all that it takes to make it again. */
 export interface Given {
@@ -8,6 +8,8 @@ export interface Given {
   readonly version: string | null;
   /** SHA-256 of the report.json that it replaces; null in a first report. */
   readonly replaces: string | null;
+  /** It was made without the log, from cells. */
+  readonly fromCells: boolean;
 }
 
 /** Reads a report's page as the text it is; null where it holds no plan. */
@@ -16,7 +18,12 @@ export function givenIn(html: string): Given | null {
   if (plan === undefined) return null;
   const [, version] = /Made by closeout (\S+) from the plan/.exec(html) ?? [];
   const [, replaces] = new RegExp(`${REPLACES}</dt>\\s*<dd>([0-9a-f]{64})</dd>`).exec(html) ?? [];
-  return { planText: unescaped(plan), version: version ?? null, replaces: replaces ?? null };
+  return {
+    planText: unescaped(plan),
+    version: version ?? null,
+    replaces: replaces ?? null,
+    fromCells: html.includes(`<dd>${FROM_CELLS}</dd>`),
+  };
 }
 
 const NAMED: Readonly<Record<string, string>> = { lt: "<", gt: ">", quot: '"', amp: "&", nbsp: "\u00a0" };

@@ -1,8 +1,9 @@
 import { describe, expect, it } from "vitest";
-import { ordinal } from "../../src/report/changes/words.ts";
+import { ordinal, shownTexts } from "../../src/report/changes/words.ts";
 import { renderReport } from "../../src/report/index.ts";
 import { reportSchema } from "../../src/report/schema.ts";
 import { sectionOf, textOf } from "./markup.ts";
+import { contacts } from "./plans.ts";
 import { firstRun, secondRun, thirdRun, undecidableRerun } from "./rerun-case.ts";
 
 const second = await renderReport(secondRun);
@@ -131,4 +132,20 @@ it("counts runs in words, and from the eleventh on in figures", () => {
     "24th",
     "111th",
   ]);
+});
+
+it("gives a measure whose limit is in its own unit its differences in that unit, and draws them in percent", () => {
+  const shown = (relative: number, estimate: number) => ({
+    estimate,
+    low: estimate - 0.01,
+    high: estimate + 0.01,
+    relative: { estimate: relative, low: relative - 0.01, high: relative + 0.01 },
+    zone: "within" as const,
+    units: { control: 9, variant: 9 },
+    totals: { control: 1, variant: 1 },
+  });
+  const metric = { ...contacts, unitOfMeasure: "s", margin: { kind: "absolute" as const, value: 0.1 } };
+  const { before, after } = shownTexts({ before: shown(0.02, 0.04), after: shown(0.01, 0.02) }, metric);
+  expect([before.estimate, after.estimate]).toEqual(["+0.040 s", "+0.020 s"]);
+  expect(after.drawn?.estimate).toBe(0.01);
 });

@@ -109,7 +109,8 @@ describe("a run that is interrupted", () => {
       expect(filesOf(on.report)).toEqual(after);
       expect(readdirSync(on.folder).sort()).toEqual(["log.csv", "plan.yaml", "report"]);
     }
-  });
+    // half a minute of two cores to itself; far longer where others work beside it
+  }, 900_000);
 
   // A limit on the size of a file stands for a full disk: the write fails in the middle of the report.
   it("leaves the earlier report as it was when the disk is full, and says so", () => {

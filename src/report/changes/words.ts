@@ -1,3 +1,4 @@
+import { ruleOf } from "../../decision/index.ts";
 import type { Metric, Plan, PlanChange } from "../../plan/index.ts";
 import { count, type Interval, list, quoted, type Scale, signedEstimate, signedInterval } from "../../words/index.ts";
 import { controlOf } from "../plan-words.ts";
@@ -77,13 +78,34 @@ export function logText(log: ChangesJson["log"]): string {
   return `The log is another: ${list(parts)}.`;
 }
 
-/** How an estimate is shown before and after: relative where both reports have it so, else as a difference. */
+const MOST_TOLD = 3;
+
+/** 'the filter "staff accounts" was added (staff book for training). The log is the same.' */
+export function whatChanged({ plan: all, log }: Pick<ChangesJson, "plan" | "log">, plan: Plan): string {
+  const counted = all.filter(({ counts }) => counts);
+  const told = counted.slice(0, MOST_TOLD).map((change) => changeText(change, plan));
+  const more = counted.length - told.length;
+  const parts = more > 0 ? [...told, `${more} more (section 2)`] : told;
+  const said =
+    counted.length > 0
+      ? `${parts.join("; ")}.`
+      : all.length > 0
+        ? "only texts of the plan, on which no figure depends."
+        : "nothing in the plan.";
+  return `${said} ${logText(log)}`;
+}
+
+/**
+ * How an estimate is shown before and after: in percent where both reports have it so, else as a difference; as a
+ * difference also where the plan states its amount in the metric's own unit. Drawn in percent in any case.
+ */
 export function shownTexts(
   { before, after }: Pick<EffectChange, "before" | "after">,
   metric: Metric | null,
 ): { readonly before: Figure; readonly after: Figure } {
   const both = [before, after].filter((one) => one !== null);
-  const isRelative = both.every(({ relative }) => relative !== null);
+  const hasRelative = both.every(({ relative }) => relative !== null);
+  const isRelative = hasRelative && (metric === null || ruleOf(metric)?.kind !== "absolute");
   const scale: Scale = isRelative
     ? { kind: "percent" }
     : metric?.summary === "proportion"
@@ -93,12 +115,9 @@ export function shownTexts(
     if (one === null) return { estimate: "not there", interval: "", drawn: null };
     const { estimate, low, high } = one;
     const interval: Interval | null = isRelative ? one.relative : estimate === null ? null : { estimate, low, high };
-    if (interval === null) return { estimate: "\u2013", interval: "no interval", drawn: null };
-    return {
-      estimate: signedEstimate(interval, scale),
-      interval: signedInterval(interval, scale),
-      drawn: isRelative ? interval : null,
-    };
+    const drawn = hasRelative ? one.relative : null;
+    if (interval === null) return { estimate: "\u2013", interval: "no interval", drawn };
+    return { estimate: signedEstimate(interval, scale), interval: signedInterval(interval, scale), drawn };
   };
   return { before: of(before), after: of(after) };
 }

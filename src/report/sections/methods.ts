@@ -2,7 +2,7 @@ import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts"
 import type { InputFile, Reduction } from "../../engine/types.ts";
 import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
 import { count, list, planPercent } from "../../words/index.ts";
-import { REPLACES } from "../history.ts";
+import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
 import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
@@ -30,21 +30,13 @@ export interface FileText {
   readonly fingerprint: string;
 }
 
-export function methodsSection({
-  plan,
-  planText,
-  planSha256,
-  version,
-  reduction,
-  effects,
-  choices,
-  rerun,
-}: ReportInputs): MethodsSection {
+export function methodsSection(inputs: ReportInputs): MethodsSection {
+  const { plan, planText, reduction, effects, choices } = inputs;
   return {
     methods: methods(plan, effects, choices, reduction),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
-    facts: facts(plan, planSha256, version, reduction, rerun),
+    facts: facts(inputs),
     cautions: cautions(plan),
     planText,
   };
@@ -54,7 +46,7 @@ function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
   return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
 }
 
-function facts(plan: Plan, planSha256: string, version: string, { engine }: Reduction, rerun: ReportInputs["rerun"]) {
+function facts({ plan, planSha256, version, reduction: { engine }, ...of }: ReportInputs) {
   const { owner, link, ended, notes, decided } = plan.texts;
   const decision =
     decided === null
@@ -64,7 +56,9 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
           .join(", ");
   const known: readonly (readonly [string, string | null])[] = [
     ["Plan, SHA-256", planSha256],
-    [REPLACES, rerun?.previous.sha256 ?? null],
+    ["Made from", of.fromCells === true ? FROM_CELLS : null],
+    ["cells.json, SHA-256", of.cellsSha256 ?? null],
+    [REPLACES, of.rerun?.previous.sha256 ?? null],
     ["The rule, kept before the start", registeredText(plan)],
     ["closeout", version],
     ["Engine", `${engine.name} ${engine.version}`],

@@ -2,7 +2,7 @@ import { metricOf, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Plan } from "../../plan/index.ts";
 import { capital, count, list, plural, quoted } from "../../words/index.ts";
 import type { ChangesJson, EffectChange } from "../changes/types.ts";
-import { changeText, isOtherConclusion, logText, nameOf, ordinal, saidBefore, shownTexts } from "../changes/words.ts";
+import { isOtherConclusion, nameOf, ordinal, saidBefore, shownTexts, whatChanged } from "../changes/words.ts";
 import { shortFingerprint } from "../history.ts";
 import { stepSentences } from "./steps.ts";
 import { whyItMoved } from "./why-moved.ts";
@@ -30,7 +30,7 @@ export function rerunLines(changes: ChangesJson, plan: Plan): RerunLines {
   return {
     head: `${ordinal(run)} run, replaces the report with fingerprint ${shortFingerprint(replaces)}`,
     said: saidBefore(changes),
-    sentences: [whatChanged(changes, plan), ...removedSentences(changes, plan)],
+    sentences: [`What changed: ${whatChanged(changes, plan)}`, ...removedSentences(changes, plan)],
     before: `${ordinal(run - 1)} run`,
     estimates: isDecided ? effects.filter(({ role }) => role !== "secondary").map((one) => estimateRow(one, plan)) : [],
     after: [
@@ -44,21 +44,6 @@ export function rerunLines(changes: ChangesJson, plan: Plan): RerunLines {
 }
 
 const MOST_TOLD = 3;
-
-/** 'What changed: the filter "staff accounts" was added (staff book for training). The log is the same.' */
-export function whatChanged({ plan: all, log }: ChangesJson, plan: Plan): string {
-  const counted = all.filter(({ counts }) => counts);
-  const told = counted.slice(0, MOST_TOLD).map((change) => changeText(change, plan));
-  const more = counted.length - told.length;
-  const parts = more > 0 ? [...told, `${more} more (section 2)`] : told;
-  const said =
-    counted.length > 0
-      ? `${parts.join("; ")}.`
-      : all.length > 0
-        ? "only texts of the plan, on which no figure depends."
-        : "nothing in the plan.";
-  return `What changed: ${said} ${logText(log)}`;
-}
 
 /** Who was removed by each filter of visitors that came anew. */
 function removedSentences({ plan: changes, flow }: ChangesJson, plan: Plan): string[] {

@@ -129,6 +129,8 @@ function notDrawnText({ notDrawn }: NotDrawn, { unitCalled: { many } }: Plan): s
       return "Nothing was drawn from the groups\u2019 values: what was drawn does not vary.";
     case "undefined-draws":
       return "What was drawn from the groups\u2019 values is not shown: over 1% of the draws had no figure.";
+    case "no-buckets":
+      return `Nothing was drawn from the groups\u2019 values: for this confidence the log is needed, since some of the sums that were kept would stand for fewer than 10 ${many}.`;
     default:
       return unknown(notDrawn);
   }
