@@ -1,5 +1,5 @@
 import { MINUS, plain, quoted, type Scale } from "../words/index.ts";
-import { NONE } from "./effect-text.ts";
+import { sixDigits } from "./effect-text.ts";
 
 /** What an axis or a table of differences is in. */
 export function scaleText(scale: Scale, control = ""): string {
@@ -22,7 +22,3 @@ export function axisLabel(tick: number, scale: Scale): string {
 
 /** Figures of a table of numbers, six digits each. */
 export const figures = (values: readonly (number | null)[]): string[] => values.map(sixDigits);
-
-export function sixDigits(figure: number | null): string {
-  return figure === null ? NONE : plain(Number(figure.toPrecision(6)));
-}

@@ -1,4 +1,5 @@
 import type { ChangesJson } from "./changes/types.ts";
+import { namesToIsolate } from "./direction.ts";
 import { controlOf, kindText, whenText } from "./plan-words.ts";
 import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
 import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
@@ -21,6 +22,7 @@ import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
+import { withoutControls } from "./typeset.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
 export interface Page {
@@ -51,6 +53,10 @@ export interface Page {
   readonly power: PowerSection;
   readonly methods: MethodsSection;
   readonly consort: ConsortTable;
+  /** Of the plan, those that run from right to left. */
+  readonly names: readonly string[];
+  /** Of measure, as the plan calls them. */
+  readonly units: readonly string[];
   /** By id, for the terms that link to their line in Methods: only lines that this report has. */
   readonly terms: Readonly<Record<string, string>>;
 }
@@ -125,6 +131,15 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     power: powerSection(plan, reduction, effects),
     methods,
     consort: consortTable(plan, reduction, baseline !== null),
+    units: [
+      ...new Set(
+        plan.metrics.flatMap(({ unitOfMeasure }) => (unitOfMeasure === null ? [] : [withoutControls(unitOfMeasure)])),
+      ),
+    ],
+    names: namesToIsolate([
+      plan.experiment,
+      ...[...plan.metrics, ...plan.variants, ...plan.filters].map(({ name }) => name),
+    ]),
     terms: Object.fromEntries(methods.methods.map(({ id }) => [id, id])),
   };
 }

@@ -4,7 +4,7 @@ import type { Drawing } from "./charts/draw.ts";
 import type { Comparison } from "./comparison.ts";
 import type { Page } from "./page.ts";
 import { pageOne } from "./page-one.ts";
-import { everyText, typeset } from "./typeset.ts";
+import { typeset, typesetPlainly } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
 const FOLDER = new URL("../../templates/", import.meta.url);
@@ -41,7 +41,7 @@ export function renderPage(page: Page): string {
 
 /** The same of two reports that are compared. */
 export function renderComparison(page: Comparison): string {
-  return rendered("compare.hbs", everyText(page));
+  return rendered("compare.hbs", typesetPlainly(page));
 }
 
 /** Page one alone, on one sheet: `fingerprint` tells whose it is. */

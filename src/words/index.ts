@@ -1,7 +1,7 @@
 // numbers
 
 export { atLeast, casesText, spanText } from "./cases.ts";
-export { chanceText, pText } from "./chance.ts";
+export { chanceText, pCell, pText } from "./chance.ts";
 // nouns and days
 export { type Day, dateSpan, dateText, dayOfEpoch, daysText } from "./dates.ts";
 // estimates with their intervals

@@ -41,7 +41,7 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
   };
 }
 
-function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly flow?: HandFlow }): ReportInputs {
+export function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly flow?: HandFlow }): ReportInputs {
   const { plan, effects = [] } = over;
   const reduction = reductionOf(plan, over.flow ?? flow);
   const units = analysedUnits(reduction);

@@ -1,5 +1,5 @@
 import type { Check, CheckOutcome, Figure } from "../../checks/types.ts";
-import { capital, list, MINUS, number, plural } from "../../words/index.ts";
+import { capital, list, MINUS, number, pCell, plural } from "../../words/index.ts";
 
 /** Section 3: can the data be trusted? Failed checks first, then cautions, the strong ones before the others. */
 export interface ChecksSection {
@@ -111,7 +111,8 @@ function figureTexts(entries: readonly (readonly [string, Figure])[], path: stri
         name,
       );
     }
-    return [{ name, value: figureText(figure) }];
+    const isP = typeof figure === "number" && (key === "p" || key === "pAdjusted");
+    return [{ name, value: isP ? pCell(figure) : figureText(figure) }];
   });
 }
 

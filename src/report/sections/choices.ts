@@ -7,8 +7,8 @@ import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
 import { choiceText, unchanged } from "../choice-words.ts";
 import { drawnEffects } from "../drawn.ts";
-import { effectText, type Signed, verdictText } from "../effect-text.ts";
-import { axisLabel, scaleText, sixDigits } from "../figure-words.ts";
+import { effectText, pOrNone, type Signed, sixDigits, verdictText } from "../effect-text.ts";
+import { axisLabel, scaleText } from "../figure-words.ts";
 import { controlOf } from "../plan-words.ts";
 
 /** One contrast under other reasonable choices: words and figures as text, each row's line a drawing of its own. */
@@ -93,7 +93,10 @@ async function figure(
     numberColumns: NUMBERS.map(([head]) => head),
     numbers: rows.map((row) => ({
       choice: choiceText(row.choice, metric, plan),
-      cells: [...NUMBERS.map(([, pick]) => sixDigits(pick(row))).slice(0, -1), row.agrees ? "yes" : "no"],
+      cells: [
+        ...NUMBERS.map(([, pick, write = sixDigits]) => write(pick(row))).slice(0, -1),
+        row.agrees ? "yes" : "no",
+      ],
     })),
   };
 }
@@ -179,13 +182,17 @@ function readingText(hasMark: boolean): string {
   ].join(" ");
 }
 
-const NUMBERS: readonly (readonly [head: string, pick: (row: ChoiceRow) => number | null])[] = [
+const NUMBERS: readonly (readonly [
+  head: string,
+  pick: (row: ChoiceRow) => number | null,
+  write?: (figure: number | null) => string,
+])[] = [
   ["difference", ({ difference }) => difference.estimate],
   ["low", ({ difference }) => difference.low],
   ["high", ({ difference }) => difference.high],
   ["relative", (row) => relativeOf(row)?.estimate ?? null],
   ["low", (row) => relativeOf(row)?.low ?? null],
   ["high", (row) => relativeOf(row)?.high ?? null],
-  ["p", ({ difference }) => difference.p],
+  ["p", ({ difference }) => difference.p, pOrNone],
   ["the same", () => null],
 ];

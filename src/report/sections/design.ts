@@ -1,5 +1,5 @@
 import type { Plan } from "../../plan/types.ts";
-import { count, list, plain, planPercent, plural } from "../../words/index.ts";
+import { capital, count, list, plain, planPercent, plural } from "../../words/index.ts";
 
 /** What the plan laid down before the start: who could be enrolled, what the groups were given, and how it is judged. */
 export interface DesignSection {
@@ -72,7 +72,10 @@ function facts(plan: Plan): Fact[] {
     },
     {
       name: "Size planned",
-      value: plan.plannedUnits === null ? NOT_STATED : `${count(plan.plannedUnits)} ${many}, all variants together.`,
+      value:
+        plan.plannedUnits === null
+          ? `${capital(NOT_STATED)}.`
+          : `${count(plan.plannedUnits)} ${many}, all variants together.`,
     },
   ];
 }

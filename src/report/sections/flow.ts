@@ -3,6 +3,7 @@ import type { Plan } from "../../plan/types.ts";
 import { count, percent } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { flowStem, type Stem } from "../charts/flow.ts";
+import { NONE } from "../effect-text.ts";
 import { unitLine } from "../ledger.ts";
 
 /** The flow of units as CONSORT draws it: one stem to enrolment, then one for each variant, and at each line who left. */
@@ -64,9 +65,9 @@ export async function flowFigure(plan: Plan, { unitLines, unitsSeen }: Reduction
         variant: name,
         control: isControl,
         steps: [
-          total("begins", "enrolled", all, all === 0 ? "" : "100%"),
+          total("begins", "enrolled", all, shareOf(all, all)),
           ...steps.map((line) => left(plan, line.id, ofVariant(line.byVariant, v), all)),
-          total("ends", "counted", counted, all === 0 ? "" : percent(counted / all)),
+          total("ends", "counted", counted, shareOf(counted, all)),
         ],
       };
     }),
@@ -79,9 +80,15 @@ function left(plan: Plan, id: string, units: number, enrolled: number | null): F
     stem: "leaves",
     text: unitLine(id, plan),
     units: count(units),
-    share: enrolled === null || enrolled === 0 || units === 0 ? "" : percent(units / enrolled),
+    share: enrolled === null ? "" : shareOf(units, enrolled),
     total: false,
   };
+}
+
+/** All of them are 100%, without a place after the point. */
+function shareOf(units: number, enrolled: number): string {
+  if (enrolled === 0) return NONE;
+  return units === enrolled ? "100%" : percent(units / enrolled);
 }
 
 function ofVariant(byVariant: ByVariant | null, v: number): number {

@@ -222,7 +222,14 @@ function methods(
       source: "CONSORT 2010 flow diagram; ICH E9(R1)",
     },
   ];
-  return all.filter(({ when }) => when).map(({ name, how, source }) => ({ id: idOf(name), name, how, source }));
+  return all
+    .filter(({ when }) => when)
+    .map(({ name, how, source }) => ({ id: idOf(name), name, how, source: ranges(source) }));
+}
+
+/** Pages of a journal: "221–228". */
+function ranges(source: string): string {
+  return source.replace(/(\d)-(?=\d)/g, "$1\u2013");
 }
 
 /** "Relative difference" is `method-relative-difference`. */

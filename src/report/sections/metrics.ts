@@ -2,13 +2,14 @@ import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan, Role, Summary } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, list, percentile, plain, plural, pText } from "../../words/index.ts";
+import { capital, count, type Interval, list, percentile, plain, plural } from "../../words/index.ts";
 import {
   bareText,
   effectText,
   levelsText,
   NONE,
   PURPOSE,
+  pOrNone,
   type Signed,
   sideBySide,
   verdictText,
@@ -242,18 +243,14 @@ function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
     variant: effect.variant,
     difference: text.bare,
     relative: "absent" in relative ? { estimate: "not shown", interval: "" } : (text.relative ?? text.bare),
-    p: pCell(difference.p),
-    pAdjusted: pCell(effect.pAdjusted),
-    pBeside: effect.pHolm === null ? "" : `Holm ${pCell(effect.pHolm)}`,
+    p: pOrNone(difference.p),
+    pAdjusted: pOrNone(effect.pAdjusted),
+    pBeside: effect.pHolm === null ? "" : `Holm ${pOrNone(effect.pHolm)}`,
     method: METHOD[difference.method],
     term: TERM[difference.method],
     verdict: verdictText(effect, plan),
     beside: besideTexts(effect, metric),
   };
-}
-
-function pCell(p: number | null): string {
-  return p === null ? NONE : pText(p).replace(/^p (= )?/, "");
 }
 
 function besideTexts(effect: Effect, metric: Metric): string[] {
