@@ -65,7 +65,8 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
   };
 }
 
-const rowLineId = (unitLine: string) =>
+/** The row ledger's line for the rows of units on one of theirs. */
+export const rowLineId = (unitLine: string) =>
   unitLine.startsWith("filter:") ? `unit-filter:${unitLine.slice("filter:".length)}` : `unit-${unitLine}`;
 
 /**

@@ -9,6 +9,7 @@ import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { readLists } from "./lists.ts";
 import { logEnd } from "./logEnd.ts";
+import { metricLedgers } from "./metricLedger.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
@@ -30,7 +31,7 @@ import {
   timeRange,
   units,
 } from "./sql/index.ts";
-import type { Reduction } from "./types.ts";
+import type { MetricCells, MetricLedger, Reduction } from "./types.ts";
 import { dayRuns, localDay, offsetsByLocalTime } from "./zone.ts";
 
 export interface ReduceOptions {
@@ -137,6 +138,8 @@ async function stages(
   const values = await metricValues(plan, layout, engine, dialect);
   const metrics = await metricCells(plan, values, engine, dialect);
   const account = await ledger(plan, layout, engine);
+  const ledgers = await metricLedgers(plan, layout, engine);
+  refuseOtherCounts(plan, metrics, ledgers);
   const found = await facts(plan, layout, engine, logEndUs);
   const prints = await fingerprints;
   if (options.rejectsTo !== undefined) {
@@ -155,8 +158,19 @@ async function stages(
     ...account,
     facts: found,
     metrics,
+    metricLedgers: ledgers,
   };
   return { reduction, values };
+}
+
+/** What a metric's ledger counts must be what its cells count; a ratio's cells count the rows of both parts. */
+function refuseOtherCounts(plan: Plan, metrics: readonly MetricCells[], ledgers: readonly MetricLedger[]): void {
+  for (const [m, { name, per }] of plan.metrics.entries()) {
+    const [inLedger, inCells] = [ledgers[m]?.lines.at(-1)?.rows, metrics[m]?.countedRows];
+    if (per === null && inLedger !== inCells) {
+      throw new Error(`${name}: its ledger ends with ${inLedger} rows but ${inCells} were counted`);
+    }
+  }
 }
 
 /** The local day on which the first analysed unit was enrolled. */

@@ -20,8 +20,25 @@ export interface Reduction {
   readonly facts: Facts;
   /** One a metric, in plan order. */
   readonly metrics: readonly MetricCells[];
+  /** The account of each metric's rows, in plan order. */
+  readonly metricLedgers: readonly MetricLedger[];
   /** Rejected rows by reason, most frequent first. */
   readonly rejectReasons: readonly { readonly reason: string; readonly rows: number }[];
+}
+
+/**
+ * The lines of the row ledger, all of them, for the rows that a metric's `of` (of a ratio the numerator) matches by event and
+ * where. The last one is what the metric counted. A rejected row is on its line as far as its event and columns could be
+ * read; a record that was not cut into cells is in no metric's account.
+ */
+export interface MetricLedger {
+  readonly metric: string;
+  readonly lines: readonly {
+    readonly id: string;
+    readonly rows: number;
+    /** Exact sum of the column that the metric takes, in 10^-9, over rows that hold a number; null where it takes none. */
+    readonly sum: bigint | null;
+  }[];
 }
 
 export interface InputFile {

@@ -110,7 +110,16 @@ export const reportSchema = z.strictObject({
       .array(z.strictObject({ id: z.string(), line: z.string(), units: count, byVariant: byVariant.nullable() }))
       .describe("The units add up to unitsSeen."),
     analysed: byVariant,
-    metrics: z.array(z.never()),
+    metrics: z
+      .array(
+        z.strictObject({
+          metric: z.string(),
+          lines: z.array(z.strictObject({ id: z.string(), line: z.string(), rows: count, sum: numberOrNull })),
+        }),
+      )
+      .describe(
+        "The rows that each metric's event and where match (a ratio's numerator), by the same lines; sum is of the metric's column, null without one. The last line is what the metric counted.",
+      ),
   }),
   checks: z.array(check),
   effects: z.array(effect),

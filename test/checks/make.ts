@@ -134,6 +134,7 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       ...shape.facts,
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
+    metricLedgers: [],
     rejectReasons: shape.rejectReasons ?? [],
   };
 }

@@ -31,7 +31,7 @@ export function metricOf(
   { counted, before: earlier }: RowTables,
   analysed: readonly Unit[],
   clock: Clock,
-): OracleMetric {
+): Omit<OracleMetric, "ledger"> {
   const parts = metric.per === null ? [metric.of] : [metric.of, metric.per];
   const matched = parts.map((part) => new Set(matchedRows(part, rows, counted)));
   const numberless = parts.flatMap((part, place) =>

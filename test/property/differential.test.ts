@@ -8,6 +8,7 @@ import { diceOf } from "../oracle/random/dice.ts";
 import { drawForm, type Form } from "../oracle/random/write.ts";
 import { covariateRules } from "./rules/covariates.ts";
 import { ledgerRules } from "./rules/ledger.ts";
+import { metricLedgerRules } from "./rules/metric-ledger.ts";
 import type { Rules } from "./rules/seen.ts";
 import { timeRules } from "./rules/time.ts";
 import { valueRules } from "./rules/values.ts";
@@ -18,7 +19,14 @@ import { twoAtATime } from "./temporary.ts";
 // The seeds are fixed: a log that fails once fails again. More of them: SEEDS=2000 SEED=5000 before the command.
 const FIRST = Number(process.env.SEED ?? 0);
 const SEEDS = Array.from({ length: Number(process.env.SEEDS ?? 500) }, (_, at) => FIRST + at);
-const RULES: Rules = { ...covariateRules, ...ledgerRules, ...timeRules, ...valueRules, ...whereRules };
+const RULES: Rules = {
+  ...covariateRules,
+  ...ledgerRules,
+  ...metricLedgerRules,
+  ...timeRules,
+  ...valueRules,
+  ...whereRules,
+};
 const MINUTES = 60_000;
 
 const formOf = (seed: number): Form => drawForm(diceOf(seed + 2_000_000));

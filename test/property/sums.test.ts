@@ -43,6 +43,7 @@ function wrong(change: Partial<CellTable>): string[] {
       x: null,
     })),
     quantile: null,
+    ledger: [],
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null, covariate: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);

@@ -104,6 +104,13 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       logEndUs: 1_774_220_000_000_000n,
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
+    metricLedgers: plan.metrics.map(({ name, of }) => ({
+      metric: name,
+      lines: rowLines.map(({ id, rows }) => {
+        const own = Math.floor(rows / 40);
+        return { id, rows: own, sum: "column" in of.aggregate ? BigInt(own) * 812_350_000_000n : null };
+      }),
+    })),
     rejectReasons: [
       { reason: "at is not a time", rows: 30 },
       { reason: "fare is not a number", rows: 11 },

@@ -7,6 +7,7 @@ export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
 export { atEnrolment, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
+export { metricRows, PLACE, placeOf } from "./metricRows.ts";
 /** Order statistics. */
 export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
