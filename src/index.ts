@@ -19,6 +19,9 @@ import { openFolder } from "./report/folder.ts";
 import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
 import { version } from "./version.ts";
 
+// before the end: plan, log and soundness without any result
+export { type CheckOutcome, check } from "./check.ts";
+export { type BlindJson, blindJsonSchema } from "./report/check/index.ts";
 export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };
 

@@ -14,6 +14,7 @@ import type { Check, ContrastFigures } from "./types.ts";
 import { unknownVariants } from "./unknown-variants.ts";
 import { withoutRows } from "./without-rows.ts";
 
+export { BEFORE_THE_END, blindChecks } from "./blind.ts";
 export { tailsInWords } from "./normality.ts";
 export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";
 

@@ -1,5 +1,6 @@
 import { Command, CommanderError } from "commander";
 import type { CloseoutOptions } from "../index.ts";
+import { check } from "./check.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
 import { report } from "./report.ts";
@@ -78,6 +79,23 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     });
 
   program
+    .command("check")
+    .summary("look at plan and log before the end, blind: no result")
+    .description(
+      "Reads plan and log while a test runs, or before its result is looked at, and writes check.html and check.json: the rule in words, how far the test is, who was counted, and whether the data can be trusted. Nothing by variant that could show an effect.",
+    )
+    .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
+    .usage("PLAN [options]")
+    .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string, options: RawOptions) => {
+      const read = readOptions(options, facts(program, "check"));
+      end(await check({ plan, options: read }, terminal, await load(), signal));
+    });
+
+  program
     .command("demo")
     .summary("try it: an invented test with its log, plan and report")
     .description(
@@ -90,13 +108,13 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
 
   program
     .command("schema")
-    .summary("print the JSON Schema of the plan or of report.json")
+    .summary("print the JSON Schema of the plan, of report.json or of check.json")
     .description("Prints a JSON Schema. With the plan's, an editor completes and checks a plan while you write it.")
-    .argument("[OF]", "plan, or report for report.json", "plan")
-    .usage("[plan|report]")
+    .argument("[OF]", "plan, report for report.json, or check for check.json", "plan")
+    .usage("[plan|report|check]")
     .option("--debug", "on a fault of closeout itself, print where it happened")
     .action(async (of: string) => {
-      if (of !== "plan" && of !== "report") {
+      if (of !== "plan" && of !== "report" && of !== "check") {
         throw wrongArguments(`There is no schema of "${of}".`, facts(program, "schema"));
       }
       end(schema(of, terminal, await load()));
@@ -107,6 +125,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
 const AFTER_HELP = `
 Examples:
   closeout demo              an invented test in out/demo, to look around
+  closeout check plan.yaml   while the test runs: log and dates, no result
   closeout report plan.yaml  its report in out/ and the experiment's name
 
 Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments

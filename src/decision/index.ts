@@ -18,7 +18,15 @@ export { controlOf, effects } from "./effects.ts";
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
 export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
 // how large a next test is to be
-export { enrolledADay, type NextTest, nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
+export {
+  enrolledADay,
+  type NextTest,
+  nextTest,
+  plannedADay,
+  type Size,
+  type Sized,
+  type Unsized,
+} from "./next-test.ts";
 // how good the normal approximation is
 export { contrastFigures } from "./normality.ts";
 export { otherIntervalSentence } from "./normality-words.ts";
@@ -27,6 +35,7 @@ export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
+export { askedOf, ruleSentences } from "./rule-words.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
 // what would change the conclusion
 export { type Turn, whatWouldChange } from "./turning.ts";

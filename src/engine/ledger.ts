@@ -109,6 +109,7 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
   const duplicated = await engine.query(unitsWithFate(FATE.duplicate, unknown));
   const copied = layout.hasEventId ? (await engine.query(copyCounts(layout)))[0] : undefined;
   const [range = {}] = await engine.query(enrolmentRange(ids.length - 1));
+  const [kept = {}] = await engine.query(enrolmentRange(ids.length - (plan.followUp === null ? 1 : 2)));
   const named = await engine.query(variantCounts());
   const others = await engine.query(otherVariantCounts(VALUES_KEPT));
   const events = (await engine.query(eventCounts(VALUES_KEPT))).map((row) => ({
@@ -139,6 +140,8 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
     firstEnrolledUs: layout.hasTime ? wholeOrNull(range, "first_us") : null,
     lastEnrolledUs: layout.hasTime ? wholeOrNull(range, "last_us") : null,
     logEndUs,
+    firstKeptUs: layout.hasTime ? wholeOrNull(kept, "first_us") : null,
+    lastKeptUs: layout.hasTime ? wholeOrNull(kept, "last_us") : null,
   };
 }
 const VALUES_KEPT = 200;

@@ -73,6 +73,9 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** First and last enrolment of a unit that is counted, or will be once it is followed to the end; null without time. */
+  readonly firstKeptUs: bigint | null;
+  readonly lastKeptUs: bigint | null;
 }
 export interface ValueCount {
   readonly value: string;

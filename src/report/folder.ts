@@ -63,9 +63,16 @@ export function folderName(experiment: string): string {
   return name === "" ? "experiment" : name;
 }
 
+/** The experiment of a report or a check that lies there. */
 async function experimentIn(folder: string): Promise<string | null> {
+  return (
+    (await experimentOf(path.join(folder, "report.json"))) ?? (await experimentOf(path.join(folder, "check.json")))
+  );
+}
+
+async function experimentOf(file: string): Promise<string | null> {
   try {
-    const found = JSON.parse(await readFile(path.join(folder, "report.json"), "utf8")) as { experiment?: unknown };
+    const found = JSON.parse(await readFile(file, "utf8")) as { experiment?: unknown };
     return typeof found.experiment === "string" ? found.experiment : null;
   } catch {
     return null;

@@ -3,6 +3,7 @@ import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
 import type { Contrast } from "../stats/types.ts";
 import { twelveDigits } from "./digits.ts";
 import { flowJson } from "./flow.ts";
+import { provenanceJson } from "./provenance.ts";
 import type { CheckJson, EffectJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
@@ -24,13 +25,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     accrual: [],
     sensitivity: inputs.choices.map(sensitivityJson),
     changes: null,
-    provenance: {
-      version: inputs.version,
-      plan: { sha256: inputs.planSha256, text: inputs.planText },
-      inputs: reduction.inputs.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
-      lists: reduction.lists.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
-      engine: { name: reduction.engine.name, version: reduction.engine.version },
-    },
+    provenance: provenanceJson(inputs),
   };
   return twelveDigits(report);
 }

@@ -1,6 +1,7 @@
 import { readFileSync } from "node:fs";
 import Handlebars from "handlebars";
 import type { Drawing } from "./charts/draw.ts";
+import type { BlindPage } from "./check/page.ts";
 import type { Page } from "./page.ts";
 import { typeset } from "./typeset.ts";
 
@@ -18,15 +19,24 @@ const PARTIALS = [
   "sampling",
   "power",
   "methods",
+  "from-what",
+  "rule",
+  "schedule",
+  "withheld",
 ] as const;
 
 /** The page as HTML. Everything is escaped by Handlebars; the one door for other text is `ownDrawingUnescaped`. */
 export function renderPage(page: Page): string {
+  return renderTemplate("report.hbs", page);
+}
+
+/** Any page made of our templates. */
+export function renderTemplate<P extends Page | BlindPage>(file: "report.hbs" | "check.hbs", page: P): string {
   const handlebars = Handlebars.create();
   handlebars.registerHelper("ownDrawingUnescaped", ownDrawingUnescaped);
   for (const name of PARTIALS) handlebars.registerPartial(name, template(`partials/${name}.hbs`));
   handlebars.registerPartial("style", template("style.css"));
-  const render = handlebars.compile<Page>(template("report.hbs"), {
+  const render = handlebars.compile<P>(template(file), {
     strict: true,
     knownHelpersOnly: true,
     knownHelpers: { ownDrawingUnescaped: true },

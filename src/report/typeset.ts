@@ -1,12 +1,10 @@
-import type { Page } from "./page.ts";
-
 /**
  * The page's texts as a typesetter leaves them: curly quotes, no break inside "p = 0.03" or "95% interval", and nothing
  * that would steer the browser. The plan's text stays as it is: it is shown word for word, in a block of its own.
  */
-export function typeset(page: Page): Page {
+export function typeset<P extends { readonly methods: { readonly planText: string } }>(page: P): P {
   const { planText } = page.methods;
-  const set = everyText(page) as Page;
+  const set = everyText(page) as P;
   return { ...set, methods: { ...set.methods, planText } };
 }
 

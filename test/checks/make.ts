@@ -131,6 +131,8 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       firstEnrolledUs: null,
       lastEnrolledUs: null,
       logEndUs: null,
+      firstKeptUs: null,
+      lastKeptUs: null,
       ...shape.facts,
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),

@@ -9,7 +9,7 @@ import type { Library } from "../../src/cli/library.ts";
 import { run } from "../../src/cli/program.ts";
 import { progressText } from "../../src/cli/progress.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
-import type { CloseoutOptions, Outcome, ReportJson } from "../../src/index.ts";
+import type { BlindJson, CloseoutOptions, Outcome, ReportJson } from "../../src/index.ts";
 
 const DONE: Outcome = {
   status: 0,
@@ -37,12 +37,30 @@ async function command(argv: string[], outcome: Outcome | Error = DONE, signal =
       if (outcome instanceof Error) throw outcome;
       return outcome;
     },
+    check: async (plan, options = {}) => {
+      asked.push({ plan, options });
+      if (outcome instanceof Error) throw outcome;
+      return outcome.status === 0 ? { ...outcome, terminal: "A test\n\nBlind.", check: {} as BlindJson } : outcome;
+    },
+    blindJsonSchema: () => ({ title: "check" }),
     planJsonSchema: () => ({ title: "plan" }),
     reportJsonSchema: () => ({ title: "report" }),
   };
   const status = await run(argv, { terminal, load: async () => library, signal, version: "1.2.3" });
   return { status, stdout: stdout.join("\n"), stderr: stderr.join("\n"), asked };
 }
+
+describe("closeout check", () => {
+  it("hands the plan and the options to the library and prints what it says", async () => {
+    const { status, stdout, stderr, asked } = await command(["check", "a.yaml", "--out", "x", "--threads", "2"]);
+    expect([status, stdout, stderr]).toEqual([0, "A test\n\nBlind.", ""]);
+    expect(asked[0]).toMatchObject({ plan: "a.yaml", options: { out: "x", threads: 2 } });
+  });
+  it("says what is wrong on stderr, with its status", async () => {
+    const { status, stdout, stderr } = await command(["check", "a.yaml"], { status: 3, text: "The log is empty." });
+    expect([status, stdout, stderr]).toEqual([3, "", "The log is empty."]);
+  });
+});
 
 describe("closeout report", () => {
   it("hands the plan and the options to the library and prints what it says", async () => {
@@ -101,7 +119,7 @@ describe("wrong arguments", () => {
   it.each([
     [["reprot", "a.yaml"], 'closeout has no command "reprot". Did you mean report?'],
     [["plan.yaml"], 'closeout has no command "plan.yaml". Did you mean closeout report plan.yaml?'],
-    [["check", "a.yaml"], 'closeout has no command "check".\n'],
+    [["inspect", "a.yaml"], 'closeout has no command "inspect".\n'],
     [["report"], "closeout report needs PLAN.\nUsage: closeout report PLAN [options]"],
     [["report", "a.yaml", "b.yaml"], "closeout report was given too many names."],
     [["report", "a.yaml", "--thread", "2"], "closeout report has no option --thread. Did you mean --threads?"],
@@ -112,7 +130,7 @@ describe("wrong arguments", () => {
     [["report", "a.yaml", "--threads", "none"], "--threads none: expected a whole number, 1 or more."],
     [["report", "a.yaml", "--threads", "0"], "--threads 0: expected a whole number, 1 or more."],
     [["report", "a.yaml", "--memory", "4"], "--memory 4: expected a size with its unit, such as 500MB or 4GB."],
-    [["schema", "log"], 'There is no schema of "log".\nUsage: closeout schema [plan|report]'],
+    [["schema", "log"], 'There is no schema of "log".\nUsage: closeout schema [plan|report|check]'],
   ])("closeout %j: status 2, on stderr alone, without asking the library", async (argv, message) => {
     const { status, stdout, stderr, asked } = await command(argv);
     expect(stderr).toContain(message);
@@ -136,7 +154,13 @@ describe("what is asked for", () => {
     const { status, stdout, stderr } = await command(["--help"]);
     expect([status, stderr]).toEqual([0, ""]);
     const [, commands = ""] = /Commands:\n([\s\S]*?)\n\n/.exec(stdout) ?? [];
-    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual(["report", "demo", "schema", "help"]);
+    expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual([
+      "report",
+      "check",
+      "demo",
+      "schema",
+      "help",
+    ]);
   });
 
   it("prints the help of a command", async () => {
@@ -155,6 +179,7 @@ describe("what is asked for", () => {
     expect(JSON.parse((await command(["schema"])).stdout)).toEqual({ title: "plan" });
     expect(JSON.parse((await command(["schema", "plan"])).stdout)).toEqual({ title: "plan" });
     expect(JSON.parse((await command(["schema", "report"])).stdout)).toEqual({ title: "report" });
+    expect(JSON.parse((await command(["schema", "check"])).stdout)).toEqual({ title: "check" });
   });
 });
 

@@ -102,6 +102,8 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       firstEnrolledUs: 1_772_407_300_000_000n, // 2 March 2026, 00:21 in Oslo
       lastEnrolledUs: 1_773_615_500_000_000n, // 15 March 2026, 23:58 in Oslo
       logEndUs: 1_774_220_000_000_000n,
+      firstKeptUs: 1_772_407_300_000_000n,
+      lastKeptUs: 1_773_615_500_000_000n,
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
     metricLedgers: plan.metrics.map(({ name, of }) => ({

@@ -20,6 +20,8 @@ const UNREADABLE = sql`${REASON.unreadable}, ${REASON.notText}, ${REASON.notObje
 
 /**
  * The rows that some metric's part matches, by where they ended, for the ledger of each metric: one pass over the rows.
+ * A row that ended before its unit did joins nothing. That is said by its key, for a further condition in ON made the engine
+ * compare every row with every unit.
  * Reads   rows, enrolments
  * Gives   fate, line (of the unit, NULL for a row that ended before), place (of PLACE), and per part rows<i> and sum<i>, the
  *         exact sum of its column, NULL where no row holds a number
@@ -42,7 +44,7 @@ export function metricRows(plan: Plan, layout: Layout, parts: readonly PartLayou
         ...values.map((value) => sql`r.${name(`v${value}`)}`),
       ])}
       FROM rows AS r
-      LEFT JOIN enrolments AS e ON r.fate = ${FATE.seen} AND e.unit = r.unit
+      LEFT JOIN enrolments AS e ON e.unit = CASE WHEN r.fate = ${FATE.seen} THEN r.unit END
       WHERE (${join(
         matches.map((match) => sql`r.${match}`),
         " OR ",

@@ -13,6 +13,8 @@ export interface CountedSection {
   readonly rowsRead: string;
   readonly metrics: readonly MetricRows[];
   readonly rejectReasons: readonly { readonly reason: string; readonly rows: string }[];
+  /** The file that lists each rejected row. */
+  readonly rejectsFile: string;
   readonly filters: readonly { readonly name: string; readonly why: string }[];
 }
 export interface FlowLine {
@@ -37,7 +39,11 @@ export interface LedgerLine {
   readonly share: string;
 }
 
-export function countedSection(plan: Plan, reduction: Reduction): CountedSection {
+export function countedSection(
+  plan: Plan,
+  reduction: Omit<Reduction, "metrics">,
+  rejectsFile = "rejects.csv",
+): CountedSection {
   return {
     many: plan.unitCalled.many,
     variants: plan.variants.map(({ name }) => name),
@@ -50,6 +56,7 @@ export function countedSection(plan: Plan, reduction: Reduction): CountedSection
     rowsRead: count(reduction.rowsRead),
     metrics: reduction.metricLedgers.map((ledger) => metricRows(plan, ledger)),
     rejectReasons: reduction.rejectReasons.map(({ reason, rows }) => ({ reason, rows: count(rows) })),
+    rejectsFile,
     filters: plan.filters.map(({ name, why }) => ({ name, why: why ?? "the plan gives no reason" })),
   };
 }
@@ -77,7 +84,7 @@ function metricRows(plan: Plan, { metric, lines }: MetricLedger): MetricRows {
 const BEFORE_ENROLMENT = ["not-enrolled", "outside-enrolment", "unknown-variant"];
 
 /** As in the CONSORT flow diagram: seen, left before enrolment, enrolled, left after it and why, counted. */
-function unitFlow(plan: Plan, { unitLines, unitsSeen }: Reduction): FlowLine[] {
+function unitFlow(plan: Plan, { unitLines, unitsSeen }: Pick<Reduction, "unitLines" | "unitsSeen">): FlowLine[] {
   const before = unitLines.filter((line) => BEFORE_ENROLMENT.includes(line.id));
   const after = unitLines.filter((line) => !BEFORE_ENROLMENT.includes(line.id));
   const none = plan.variants.map(() => "");

@@ -1,69 +1,18 @@
 import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
-import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
-import { count, list, planPercent } from "../../words/index.ts";
+import { list, planPercent } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
+import { type FromWhat, fromWhat } from "./from-what.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
-export interface MethodsSection {
+export interface MethodsSection extends FromWhat {
   readonly methods: readonly { readonly name: string; readonly how: string; readonly source: string }[];
-  readonly files: readonly FileText[];
-  readonly lists: readonly FileText[];
-  readonly facts: readonly { readonly name: string; readonly value: string }[];
   readonly cautions: readonly string[];
-  readonly planText: string;
 }
-export interface FileText {
-  readonly name: string;
-  readonly rows: string;
-  readonly bytes: string;
-  readonly fingerprint: string;
-}
-
-export function methodsSection({
-  plan,
-  planText,
-  planSha256,
-  version,
-  reduction,
-  effects,
-  choices,
-}: ReportInputs): MethodsSection {
-  return {
-    methods: methods(plan, effects, choices),
-    files: reduction.inputs.map(fileText),
-    lists: reduction.lists.map(fileText),
-    facts: facts(plan, planSha256, version, reduction),
-    cautions: cautions(plan),
-    planText,
-  };
-}
-
-function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
-  return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
-}
-
-function facts(plan: Plan, planSha256: string, version: string, { engine }: Reduction) {
-  const { owner, link, ended, notes, decided } = plan.texts;
-  const decision =
-    decided === null
-      ? null
-      : [decided.what, decided.by && `by ${decided.by}`, decided.on && `on ${decided.on}`, decided.because]
-          .filter((part) => part !== null && part !== "")
-          .join(", ");
-  const known: readonly (readonly [string, string | null])[] = [
-    ["Plan, SHA-256", planSha256],
-    ["closeout", version],
-    ["Engine", `${engine.name} ${engine.version}`],
-    ["Days and times", plan.timezone],
-    ["Owner", owner],
-    ["Link", link],
-    ["Why it ended", ended],
-    ["Decided", decision],
-    ["Notes", notes],
-  ];
-  return known.flatMap(([name, value]) => (value === null || value === "" ? [] : [{ name, value }]));
+export function methodsSection(inputs: ReportInputs): MethodsSection {
+  const { plan, effects, choices } = inputs;
+  return { methods: methods(plan, effects, choices), cautions: cautions(plan), ...fromWhat(inputs) };
 }
 
 /** Only what this report uses. */
