@@ -22,6 +22,8 @@ import { version } from "./version.ts";
 // before the end: plan, log and soundness without any result
 export { type CheckOutcome, check } from "./check.ts";
 export { type BlindJson, blindJsonSchema } from "./report/check/index.ts";
+// one unit, row by row
+export { type TraceOptions, type TraceOutcome, trace } from "./trace.ts";
 export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };
 

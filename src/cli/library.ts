@@ -3,7 +3,7 @@ import type * as entry from "../index.ts";
 /** What the command line needs of the library entry. It is loaded on demand, so that help and mistakes in the arguments answer at once. */
 export type Library = Pick<
   typeof entry,
-  "blindJsonSchema" | "check" | "closeout" | "planJsonSchema" | "reportJsonSchema"
+  "blindJsonSchema" | "check" | "closeout" | "planJsonSchema" | "reportJsonSchema" | "trace"
 >;
 
 export async function loadLibrary(): Promise<Library> {

@@ -6,6 +6,7 @@ import type { Library } from "./library.ts";
 import { report } from "./report.ts";
 import { schema } from "./schema.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
+import { trace } from "./trace.ts";
 import { unwritableText } from "./unwritable.ts";
 import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
 
@@ -96,6 +97,23 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     });
 
   program
+    .command("trace")
+    .summary("follow one unit's rows through the ledger, on the terminal")
+    .description(
+      "Reads plan and log as the report does, and prints what became of one unit and each of its rows, in order of time: the line of the ledger on which each ended, and by which measures it is counted. No file is written, since ids are personal data.",
+    )
+    .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
+    .usage("PLAN --unit ID [options]")
+    .requiredOption("--unit <ID>", "the id, as the log has it")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string, options: RawOptions & { readonly unit: string }) => {
+      const { out: _none, ...read } = readOptions(options, facts(program, "trace"));
+      end(await trace({ plan, unit: options.unit, options: read }, terminal, await load(), signal));
+    });
+
+  program
     .command("demo")
     .summary("try it: an invented test with its log, plan and report")
     .description(
@@ -129,8 +147,8 @@ Examples:
   closeout report plan.yaml  its report in out/ and the experiment's name
 
 Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments
-are wrong, or a file or column that they name is not there; 3 the log cannot be
-used; 1 a fault of closeout itself.`;
+are wrong, or a file, column or unit that they name is not there; 3 the log cannot
+be used; 1 a fault of closeout itself.`;
 
 interface RawOptions {
   readonly out?: string;
@@ -169,6 +187,8 @@ function inOurWords(error: CommanderError, program: Command, argv: readonly stri
       return unknownOption(word, command);
     case "commander.optionMissingArgument":
       return new UsageError(`${word.split(" ")[0]} needs a value: ${word.replace(/[<>]/g, "")}`);
+    case "commander.missingMandatoryOptionValue":
+      return command && wrongArguments(`closeout ${command.name} needs ${word}.`, command);
     case "commander.missingArgument":
       return command && wrongArguments(`closeout ${command.name} needs ${word}.`, command);
     case "commander.excessArguments":

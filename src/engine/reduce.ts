@@ -60,12 +60,34 @@ export const reduce = (planned: Plan | null, source: PlanSource, folder: string,
  * @returns what `use` gives, or what is wrong between plan and log
  * @throws UnusableLog when the log is there but cannot be used
  */
-export async function withReduction<T>(
+export function withReduction<T>(
   planned: Plan | null,
   source: PlanSource,
   folder: string,
   options: ReduceOptions,
   use: (plan: Plan, reduction: Reduction, session: Session) => Promise<T>,
+): Promise<T | { problems: readonly Problem[] }> {
+  return withLog(planned, source, folder, options, async (plan, opened) => {
+    const { reduction, values } = await stages(plan, folder, opened, duckdb, options);
+    return use(plan, reduction, openSession(plan, values, opened.engine, duckdb));
+  });
+}
+
+/** An opened log, and the engine to read it with. */
+export interface Opened {
+  readonly log: OpenLog;
+  readonly engine: Engine;
+  /** For what is gone afterwards. */
+  readonly workFolder: string;
+}
+
+/** Opens a plan's log, uses it and tidies up. @returns what `use` gives, or what is wrong between plan and log */
+export async function withLog<T>(
+  planned: Plan | null,
+  source: PlanSource,
+  folder: string,
+  options: ReduceOptions,
+  use: (plan: Plan, opened: Opened) => Promise<T>,
 ): Promise<T | { problems: readonly Problem[] }> {
   const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
   const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
@@ -75,8 +97,7 @@ export async function withReduction<T>(
     const log = await openLog(source, folder, engine, workFolder);
     const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
     if (planned === null || problems.length > 0) return { problems };
-    const { reduction, values } = await stages(planned, folder, workFolder, log, engine, duckdb, options);
-    return await use(planned, reduction, openSession(planned, values, engine, duckdb));
+    return await use(planned, { log, engine, workFolder });
   } finally {
     options.signal?.removeEventListener("abort", stop);
     engine.close();
@@ -84,15 +105,14 @@ export async function withReduction<T>(
   }
 }
 
-async function stages(
+/** Stages 1 to 6: the rows read, their duplicates marked, and the units enrolled. */
+export async function enrolUnits(
   plan: Plan,
   folder: string,
-  workFolder: string,
-  log: OpenLog,
-  engine: Engine,
+  { log, engine, workFolder }: Opened,
   dialect: Dialect,
   options: ReduceOptions,
-): Promise<{ reduction: Reduction; values: MetricValue[] }> {
+) {
   const layout = layoutOf(plan, log.groups);
   let rowsRead = 0;
   const stage = (name: string, share: number) => {
@@ -128,7 +148,19 @@ async function stages(
   await engine.run(seen(plan, layout, key));
   if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
   await engine.run(enrolments(plan, layout, key, logEndUs));
+  return { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, logEndUs, stage };
+}
 
+async function stages(
+  plan: Plan,
+  folder: string,
+  opened: Opened,
+  dialect: Dialect,
+  options: ReduceOptions,
+): Promise<{ reduction: Reduction; values: MetricValue[] }> {
+  const { log, engine } = opened;
+  const enrolled = await enrolUnits(plan, folder, opened, dialect, options);
+  const { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, logEndUs, stage } = enrolled;
   stage("adding up each unit", 0.75);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
   const firstDay = await firstEnrolmentDay(plan, layout, engine);

@@ -42,6 +42,11 @@ async function command(argv: string[], outcome: Outcome | Error = DONE, signal =
       if (outcome instanceof Error) throw outcome;
       return outcome.status === 0 ? { ...outcome, terminal: "A test\n\nBlind.", check: {} as BlindJson } : outcome;
     },
+    trace: async (plan, unit, options = {}) => {
+      asked.push({ plan: `${plan} ${unit}`, options });
+      if (outcome instanceof Error) throw outcome;
+      return outcome.status === 0 ? { status: 0, terminal: "Visitor" } : outcome;
+    },
     blindJsonSchema: () => ({ title: "check" }),
     planJsonSchema: () => ({ title: "plan" }),
     reportJsonSchema: () => ({ title: "report" }),
@@ -59,6 +64,17 @@ describe("closeout check", () => {
   it("says what is wrong on stderr, with its status", async () => {
     const { status, stdout, stderr } = await command(["check", "a.yaml"], { status: 3, text: "The log is empty." });
     expect([status, stdout, stderr]).toEqual([3, "", "The log is empty."]);
+  });
+});
+
+describe("closeout trace", () => {
+  it("hands the plan, the unit and the options to the library and prints what it says", async () => {
+    const { status, stdout, stderr, asked } = await command(["trace", "a.yaml", "--unit", "v 1", "--threads", "2"]);
+    expect([status, stdout, stderr]).toEqual([0, "Visitor", ""]);
+    expect(asked).toMatchObject([{ plan: "a.yaml v 1", options: { threads: 2 } }]);
+  });
+  it("takes an id that begins with a hyphen", async () => {
+    expect((await command(["trace", "a.yaml", "--unit=-7"])).asked).toMatchObject([{ plan: "a.yaml -7" }]);
   });
 });
 
@@ -119,6 +135,9 @@ describe("wrong arguments", () => {
   it.each([
     [["reprot", "a.yaml"], 'closeout has no command "reprot". Did you mean report?'],
     [["plan.yaml"], 'closeout has no command "plan.yaml". Did you mean closeout report plan.yaml?'],
+    [["trace", "a.yaml"], "closeout trace needs --unit <ID>.\nUsage: closeout trace PLAN --unit ID [options]"],
+    [["trace", "--unit", "x"], "closeout trace needs PLAN."],
+    [["trace", "a.yaml", "--unit", "x", "--out", "y"], "closeout trace has no option --out."],
     [["inspect", "a.yaml"], 'closeout has no command "inspect".\n'],
     [["report"], "closeout report needs PLAN.\nUsage: closeout report PLAN [options]"],
     [["report", "a.yaml", "b.yaml"], "closeout report was given too many names."],
@@ -157,6 +176,7 @@ describe("what is asked for", () => {
     expect(commands.match(/^ {2}(\w+)/gm)?.map((line) => line.trim())).toEqual([
       "report",
       "check",
+      "trace",
       "demo",
       "schema",
       "help",

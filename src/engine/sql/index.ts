@@ -15,4 +15,6 @@ export { brokenQuotes, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
+/** One unit, row by row. */
+export { nearestUnit, rowsOfUnit, unitEnd } from "./trace.ts";
 export { candidates, units } from "./units.ts";
