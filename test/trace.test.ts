@@ -31,11 +31,11 @@ describe("a unit's way through the ledger", () => {
     expect(rows).toEqual([
       "2026-03-02 09:00:00 | booking | 3 | log.csv | before the unit was enrolled",
       "2026-03-02 10:00:00 | search | list | log.csv | within the follow-up: counted in Fare a search and Rows; this row enrolled it",
-      "2026-03-02 11:00:00 | booking | 10.5 | log.csv | within the follow-up: counted in Fare, Fare a search and Rows",
+      "2026-03-02 11:00:00 | booking | 10.5 | log.csv | within the follow-up: counted in Booked, Fare, Fare a search and Rows",
       "2026-03-02 11:00:00 | booking | 10.5 | log.csv | duplicates: a row with the same event id came before",
       '2026-03-02 12:00:00 | booking | 1 | log.csv | removed by the filter "load test"',
       "2026-03-02 12:00:00 | booking | log.csv | rejected: not a number: fare",
-      "2026-03-02 13:00:00 | booking | log.csv | within the follow-up: counted in Fare, Fare a search and Rows",
+      "2026-03-02 13:00:00 | booking | log.csv | within the follow-up: counted in Booked, Fare, Fare a search and Rows",
       "2026-03-03 10:00:00 | booking | 7 | log.csv | after the follow-up had ended",
     ]);
   });

@@ -54,14 +54,11 @@ function turnedDown(plan: Plan, primaries: readonly Metric[], guardrails: readon
   const any = anyIsEnough(plan);
   const which = primaries.length === 1 ? names(primaries) : "one of them";
   const less = any
-    ? "all are shown to gain less than what is asked for"
-    : "is shown to gain less than what is asked for";
-  const reasons = [
-    `${which} is shown to be worse`,
-    ...(primaries.some((metric) => ruleOf(metric) !== null) ? [less] : []),
-    ...(guardrails.length === 0 ? [] : ["a limit is shown to be passed"]),
-  ];
-  return `It is turned down when ${list(reasons, "or")}. Otherwise the test has not settled it.`;
+    ? ", when all are shown to gain less than what is asked for"
+    : " or to gain less than what is asked for";
+  const asked = primaries.some((metric) => ruleOf(metric) !== null) ? less : "";
+  const limit = guardrails.length === 0 ? "" : ", or when a limit is shown to be passed";
+  return `It is turned down when ${which} is shown to be worse${asked}${limit}. Otherwise the test has not settled it.`;
 }
 
 /** What "shown" means. */

@@ -40,7 +40,7 @@ function enrolment(plan: Plan, { firstUs, lastUs, kept, perDay, plannedPerDay, i
   if (firstUs === null || lastUs === null) return `No ${one} is enrolled yet that would be counted.${end}`;
   const from = `${plural(kept, one, many)} ${kept === 1 ? "was" : "were"} enrolled from ${dateSpan(dayOf(firstUs, plan.timezone), dayOf(lastUs, plan.timezone)).replace(" to ", " until ")}`;
   const pace = perDay === null ? "" : `, ${paceText(perDay)} a day`;
-  const instead = plannedPerDay === null ? "" : ` (the plan's size and dates mean ${paceText(plannedPerDay)})`;
+  const instead = plannedPerDay === null ? "" : ` (the plan\u2019s size and dates mean ${paceText(plannedPerDay)})`;
   return `${from}${pace}${perDay === null ? "" : instead}.${end}`;
 }
 
