@@ -41,7 +41,7 @@ function adopted(plan: Plan, primaries: readonly Metric[], guardrails: readonly 
   const by = plan.decision.adoptWhen === "shown-worthwhile" ? ", by at least what is asked for" : "";
   const better = `shown to be better than with ${quoted(controlOf(plan).name)}${by}`;
   const verb = any || primaries.length === 1 ? "is" : "are each";
-  const none = any ? ", none of them is shown to be worse" : "";
+  const none = any ? ", and none of them is shown to be worse" : "";
   const one = guardrails.length === 1;
   const held =
     guardrails.length === 0
@@ -54,7 +54,7 @@ function turnedDown(plan: Plan, primaries: readonly Metric[], guardrails: readon
   const any = anyIsEnough(plan);
   const which = primaries.length === 1 ? names(primaries) : "one of them";
   const less = any
-    ? ", when all are shown to gain less than what is asked for"
+    ? ", or when all are shown to gain less than what is asked for"
     : " or to gain less than what is asked for";
   const asked = primaries.some((metric) => ruleOf(metric) !== null) ? less : "";
   const limit = guardrails.length === 0 ? "" : ", or when a limit is shown to be passed";
