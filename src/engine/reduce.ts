@@ -120,11 +120,12 @@ export async function enrolUnits(
     options.progress?.({ stage: name, rows: rowsRead, share });
   };
   stage("reading the log", 0);
-  const fingerprints = inputFingerprints(log);
+  const prints = inputFingerprints(log);
+  const fingerprints = Promise.all(prints);
   // A failure is met where it is awaited; until then it must not count as unhandled.
   fingerprints.catch(() => undefined);
   const zone = offsetsByLocalTime(plan.timezone);
-  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, options.signal);
+  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, prints, options.signal);
   // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
   await refuseWithoutRows(log, engine).catch(async (error: unknown) => {
     await fingerprints;

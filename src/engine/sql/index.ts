@@ -11,7 +11,7 @@ export { metricRows, PLACE, placeOf } from "./metricRows.ts";
 /** Order statistics. */
 export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
-export { brokenQuotes, listTable } from "./read.ts";
+export { brokenQuotes, linesWithSurplus, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
