@@ -14,10 +14,15 @@ import { replacedReport } from "./rerun.ts";
 import { rerunOf } from "./steps.ts";
 import { version } from "./version.ts";
 
+// before the end: plan, log and soundness without any result
+export { type CheckOutcome, check } from "./check.ts";
 export { type Compared, compareReports } from "./compare.ts";
 export type { SizeAnswer, SizeQuestion } from "./decision/index.ts";
+export { type BlindJson, blindJsonSchema } from "./report/check/index.ts";
 export { type Sealed, seal } from "./seal.ts";
 export { size } from "./size.ts";
+// one unit, row by row
+export { type TraceOptions, type TraceOutcome, trace } from "./trace.ts";
 export { type Verified, type VerifyOptions, verify } from "./verify/verify.ts";
 export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };

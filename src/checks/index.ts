@@ -23,6 +23,7 @@ import { weeks } from "./weeks.ts";
 import { withoutRows } from "./without-rows.ts";
 
 export { covariates } from "./balance.ts";
+export { BEFORE_THE_END, blindChecks } from "./blind.ts";
 export { tailsInWords } from "./normality.ts";
 export { planChanged } from "./plan-changed.ts";
 export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";

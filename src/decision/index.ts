@@ -28,7 +28,15 @@ export { lookSentences } from "./looks-words.ts";
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
 export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
 // how large a next test is to be
-export { enrolledADay, type NextTest, nextTest, type Size, type Sized, type Unsized } from "./next-test.ts";
+export {
+  enrolledADay,
+  type NextTest,
+  nextTest,
+  plannedADay,
+  type Size,
+  type Sized,
+  type Unsized,
+} from "./next-test.ts";
 // how good the normal approximation is
 export { contrastFigures } from "./normality.ts";
 export { otherIntervalSentence } from "./normality-words.ts";
@@ -37,6 +45,7 @@ export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";
 export { analysedUnits, questionOf, questionOfNextTest } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
+export { askedOf, ruleSentences } from "./rule-words.ts";
 export { foundSentence, paceInWords, sizeInWords, unsizedSentences } from "./settle.ts";
 // the effect by day since enrolment
 export { type DaysSince, daysSince, type Trend } from "./since-enrolment.ts";

@@ -67,7 +67,8 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
   };
 }
 
-const rowLineId = (unitLine: string) =>
+/** The row ledger's line for the rows of units on one of theirs. */
+export const rowLineId = (unitLine: string) =>
   unitLine.startsWith("filter:") ? `unit-filter:${unitLine.slice("filter:".length)}` : `unit-${unitLine}`;
 
 /**
@@ -117,6 +118,7 @@ export async function facts(
   const duplicated = await engine.query(unitsWithFate(FATE.duplicate, unknown));
   const copied = layout.hasEventId ? (await engine.query(copyCounts(layout)))[0] : undefined;
   const [range = {}] = await engine.query(enrolmentRange(ids.length - 1));
+  const [kept = {}] = await engine.query(enrolmentRange(ids.length - (plan.followUp === null ? 1 : 2)));
   const named = await engine.query(variantCounts());
   const others = await engine.query(otherVariantCounts(VALUES_KEPT));
   const days = layout.hasTime ? await engine.query(analysedByDay()) : [];
@@ -157,6 +159,8 @@ export async function facts(
       ),
     })),
     inIncidents: await inIncidents(plan, engine),
+    firstKeptUs: layout.hasTime ? wholeOrNull(kept, "first_us") : null,
+    lastKeptUs: layout.hasTime ? wholeOrNull(kept, "last_us") : null,
   };
 }
 const VALUES_KEPT = 200;

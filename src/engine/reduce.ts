@@ -10,6 +10,7 @@ import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { levels } from "./levels.ts";
 import { readLists } from "./lists.ts";
 import { logEnd, type SourceSpan, spansOf } from "./logEnd.ts";
+import { metricLedgers } from "./metricLedger.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
@@ -34,7 +35,7 @@ import {
   timeRange,
   units,
 } from "./sql/index.ts";
-import type { Reduction } from "./types.ts";
+import type { MetricCells, MetricLedger, Reduction } from "./types.ts";
 import { dayRuns, localDay, offsetsByLocalTime } from "./zone.ts";
 
 export interface ReduceOptions {
@@ -63,12 +64,34 @@ export const reduce = (planned: Plan | null, source: PlanSource, folder: string,
  * @returns what `use` gives, or what is wrong between plan and log
  * @throws UnusableLog when the log is there but cannot be used
  */
-export async function withReduction<T>(
+export function withReduction<T>(
   planned: Plan | null,
   source: PlanSource,
   folder: string,
   options: ReduceOptions,
   use: (plan: Plan, reduction: Reduction, session: Session) => Promise<T>,
+): Promise<T | { problems: readonly Problem[] }> {
+  return withLog(planned, source, folder, options, async (plan, opened) => {
+    const { reduction, values } = await stages(plan, folder, opened, duckdb, options);
+    return use(plan, reduction, openSession(plan, values, opened.engine, duckdb));
+  });
+}
+
+/** An opened log, and the engine to read it with. */
+export interface Opened {
+  readonly log: OpenLog;
+  readonly engine: Engine;
+  /** For what is gone afterwards. */
+  readonly workFolder: string;
+}
+
+/** Opens a plan's log, uses it and tidies up. @returns what `use` gives, or what is wrong between plan and log */
+export async function withLog<T>(
+  planned: Plan | null,
+  source: PlanSource,
+  folder: string,
+  options: ReduceOptions,
+  use: (plan: Plan, opened: Opened) => Promise<T>,
 ): Promise<T | { problems: readonly Problem[] }> {
   const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
   const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
@@ -78,8 +101,7 @@ export async function withReduction<T>(
     const log = await openLog(source, folder, engine, workFolder);
     const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
     if (planned === null || problems.length > 0) return { problems };
-    const { reduction, values } = await stages(planned, folder, workFolder, log, engine, duckdb, options);
-    return await use(planned, reduction, openSession(planned, values, engine, duckdb));
+    return await use(planned, { log, engine, workFolder });
   } finally {
     options.signal?.removeEventListener("abort", stop);
     engine.close();
@@ -87,15 +109,14 @@ export async function withReduction<T>(
   }
 }
 
-async function stages(
+/** Stages 1 to 6: the rows read, their duplicates marked, and the units enrolled. */
+export async function enrolUnits(
   plan: Plan,
   folder: string,
-  workFolder: string,
-  log: OpenLog,
-  engine: Engine,
+  { log, engine, workFolder }: Opened,
   dialect: Dialect,
   options: ReduceOptions,
-): Promise<{ reduction: Reduction; values: MetricValue[] }> {
+) {
   const layout = layoutOf(plan, log.groups);
   let rowsRead = 0;
   const stage = (name: string, share: number) => {
@@ -103,11 +124,12 @@ async function stages(
     options.progress?.({ stage: name, rows: rowsRead, share });
   };
   stage("reading the log", 0);
-  const fingerprints = inputFingerprints(log);
+  const prints = inputFingerprints(log);
+  const fingerprints = Promise.all(prints);
   // A failure is met where it is awaited; until then it must not count as unhandled.
   fingerprints.catch(() => undefined);
   const zone = offsetsByLocalTime(plan.timezone);
-  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, options.signal);
+  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, prints, options.signal);
   // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
   await refuseWithoutRows(log, engine).catch(async (error: unknown) => {
     await fingerprints;
@@ -132,7 +154,19 @@ async function stages(
   await engine.run(seen(plan, layout, key));
   if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
   await engine.run(enrolments(plan, layout, key, logEndUs));
+  return { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, spans, key, logEndUs, stage };
+}
 
+async function stages(
+  plan: Plan,
+  folder: string,
+  opened: Opened,
+  dialect: Dialect,
+  options: ReduceOptions,
+): Promise<{ reduction: Reduction; values: MetricValue[] }> {
+  const { log, engine } = opened;
+  const enrolled = await enrolUnits(plan, folder, opened, dialect, options);
+  const { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, spans, key, logEndUs, stage } = enrolled;
   stage("adding up each unit", 0.75);
   const subgroups = await levels(plan, layout, engine, dialect);
   const levelCodes = subgroups.map(({ code }) => code);
@@ -146,6 +180,8 @@ async function stages(
   const { metrics, groups: grouped } = await metricCells(plan, values, groupings, engine, dialect);
   const since = await sinceEnrolment(plan, layout, values, logEndUs, engine, dialect);
   const account = await ledger(plan, layout, engine);
+  const ledgers = await metricLedgers(plan, layout, engine);
+  refuseOtherCounts(plan, metrics, ledgers);
   const found = await facts(plan, layout, engine, logEndUs);
   const bySubgroup = subgroups.map((subgroup) => subgroup.found);
   const sound = await soundness(
@@ -172,8 +208,19 @@ async function stages(
     facts: { ...found, subgroups: bySubgroup, soundness: sound },
     metrics,
     groups: grouped.map((group, m) => ({ ...group, sinceEnrolment: since[m] ?? null })),
+    metricLedgers: ledgers,
   };
   return { reduction, values };
+}
+
+/** What a metric's ledger counts must be what its cells count; a ratio's cells count the rows of both parts. */
+function refuseOtherCounts(plan: Plan, metrics: readonly MetricCells[], ledgers: readonly MetricLedger[]): void {
+  for (const [m, { name, per }] of plan.metrics.entries()) {
+    const [inLedger, inCells] = [ledgers[m]?.lines.at(-1)?.rows, metrics[m]?.countedRows];
+    if (per === null && inLedger !== inCells) {
+      throw new Error(`${name}: its ledger ends with ${inLedger} rows but ${inCells} were counted`);
+    }
+  }
 }
 
 /** The local day on which the first analysed unit was enrolled. */

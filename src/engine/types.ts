@@ -24,8 +24,25 @@ export interface Reduction {
   readonly metrics: readonly MetricCells[];
   /** The same over other groups of the analysed units than buckets; one a metric, in plan order. */
   readonly groups: readonly MetricGroups[];
+  /** The account of each metric's rows, in plan order. */
+  readonly metricLedgers: readonly MetricLedger[];
   /** Rejected rows by reason, most frequent first. */
   readonly rejectReasons: readonly { readonly reason: string; readonly rows: number }[];
+}
+
+/**
+ * The lines of the row ledger, all of them, for the rows that a metric's `of` (of a ratio the numerator) matches by event and
+ * where. The last one is what the metric counted. A rejected row is on its line as far as its event and columns could be
+ * read; a record that was not cut into cells is in no metric's account.
+ */
+export interface MetricLedger {
+  readonly metric: string;
+  readonly lines: readonly {
+    readonly id: string;
+    readonly rows: number;
+    /** Exact sum of the column that the metric takes, in 10^-9, over rows that hold a number; null where it takes none. */
+    readonly sum: bigint | null;
+  }[];
 }
 
 export interface InputFile {
@@ -67,6 +84,9 @@ export interface Facts {
   readonly soundness: SoundnessFacts;
   /** Analysed units that enrolled in each incident of the plan, in its order. */
   readonly inIncidents: readonly ByVariant[];
+  /** First and last enrolment of a unit that is counted, or will be once it is followed to the end; null without time. */
+  readonly firstKeptUs: bigint | null;
+  readonly lastKeptUs: bigint | null;
 }
 
 /** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */

@@ -1,10 +1,11 @@
 import { readFileSync } from "node:fs";
 import Handlebars from "handlebars";
 import type { Drawing } from "./charts/draw.ts";
+import type { BlindPage } from "./check/page.ts";
 import type { Comparison } from "./comparison.ts";
 import type { Page } from "./page.ts";
 import { pageOne } from "./page-one.ts";
-import { typeset, typesetPlainly } from "./typeset.ts";
+import { typeset, typesetPlainly, typesetWithPlan } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
 const FOLDER = new URL("../../templates/", import.meta.url);
@@ -32,6 +33,10 @@ const PARTIALS = [
   "subgroups",
   "power",
   "methods",
+  "from-what",
+  "rule",
+  "schedule",
+  "withheld",
 ] as const;
 
 /** The page as HTML. Everything is escaped by Handlebars; the one door for other text is `ownDrawingUnescaped`. */
@@ -42,6 +47,11 @@ export function renderPage(page: Page): string {
 /** The same of two reports that are compared. */
 export function renderComparison(page: Comparison): string {
   return rendered("compare.hbs", typesetPlainly(page));
+}
+
+/** A check before the end. */
+export function renderBlind(page: BlindPage): string {
+  return rendered("check.hbs", typesetWithPlan(page));
 }
 
 /** Page one alone, on one sheet: `fingerprint` tells whose it is. */

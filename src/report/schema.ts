@@ -5,10 +5,10 @@ const outcome = z.enum(["pass", "caution", "fail"]);
 const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
 );
-const count = z.number().min(0);
+export const count = z.number().min(0);
 const tail = z.number().min(0).max(1);
 const byVariant = z.record(z.string(), count);
-const numberOrNull = z.number().nullable();
+export const numberOrNull = z.number().nullable();
 const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
 
 const arm = z.strictObject({
@@ -144,7 +144,7 @@ const sinceEnrolment = z
   })
   .describe("One effect by day since enrolment, unadjusted and pointwise.");
 
-const check = z
+export const checkSchema = z
   .object({
     id: z.string(),
     result: outcome,
@@ -158,6 +158,36 @@ const check = z
 
 const file = z.strictObject({ name: z.string(), bytes: count, sha256: fingerprint, rows: count });
 
+export const flowSchema = z.strictObject({
+  rowsRead: count,
+  rows: z
+    .array(z.strictObject({ id: z.string(), line: z.string(), rows: count }))
+    .describe("The rows add up to rowsRead."),
+  unitsSeen: count,
+  units: z
+    .array(z.strictObject({ id: z.string(), line: z.string(), units: count, byVariant: byVariant.nullable() }))
+    .describe("The units add up to unitsSeen."),
+  analysed: byVariant,
+  metrics: z
+    .array(
+      z.strictObject({
+        metric: z.string(),
+        lines: z.array(z.strictObject({ id: z.string(), line: z.string(), rows: count, sum: numberOrNull })),
+      }),
+    )
+    .describe(
+      "The rows that each metric's event and where match (a ratio's numerator), by the same lines; sum is of the metric's column, null without one. The last line is what the metric counted.",
+    ),
+});
+
+export const provenanceSchema = z.strictObject({
+  version: z.string(),
+  plan: z.strictObject({ sha256: fingerprint, text: z.string() }),
+  inputs: z.array(file),
+  lists: z.array(file),
+  engine: z.strictObject({ name: z.string(), version: z.string() }),
+});
+
 /** report.json (DESIGN 7) as a schema: keys of the contract are closed, only a check's figures are open. */
 export const reportSchema = z.strictObject({
   format: z.literal(1),
@@ -168,19 +198,8 @@ export const reportSchema = z.strictObject({
     sentence: z.string(),
     reasons: z.array(z.string()),
   }),
-  flow: z.strictObject({
-    rowsRead: count,
-    rows: z
-      .array(z.strictObject({ id: z.string(), line: z.string(), rows: count }))
-      .describe("The rows add up to rowsRead."),
-    unitsSeen: count,
-    units: z
-      .array(z.strictObject({ id: z.string(), line: z.string(), units: count, byVariant: byVariant.nullable() }))
-      .describe("The units add up to unitsSeen."),
-    analysed: byVariant,
-    metrics: z.array(z.never()),
-  }),
-  checks: z.array(check),
+  flow: flowSchema,
+  checks: z.array(checkSchema),
   effects: z.array(effect),
   subgroups: z.array(subgroup),
   accrual: z.array(accrual),

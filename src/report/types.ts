@@ -49,7 +49,16 @@ export interface FlowJson {
     readonly byVariant: Readonly<Record<string, number>> | null;
   }[];
   readonly analysed: Readonly<Record<string, number>>;
-  readonly metrics: readonly never[];
+  /** Of each metric's `of` the rows it matches, by the lines of `rows`; the last line is what it counted. */
+  readonly metrics: readonly {
+    readonly metric: string;
+    readonly lines: readonly {
+      readonly id: string;
+      readonly line: string;
+      readonly rows: number;
+      readonly sum: number | null;
+    }[];
+  }[];
 }
 
 /** The check's own figures stand beside these keys. */

@@ -4,6 +4,7 @@ export { atLeast, casesText, spanText } from "./cases.ts";
 export { chanceText, pCell, pText } from "./chance.ts";
 // nouns and days
 export { type Day, dateSpan, dateText, dayOfEpoch, daysText } from "./dates.ts";
+export { exact } from "./exact.ts";
 // estimates with their intervals
 export {
   type Comparative,

@@ -140,11 +140,14 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       logEndUs: null,
       analysedByDay: [],
       subgroups: [],
+      firstKeptUs: null,
+      lastKeptUs: null,
       ...shape.facts,
       soundness: { ...soundnessOf(plan, enrolled), ...shape.soundness },
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
     groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
+    metricLedgers: [],
     rejectReasons: shape.rejectReasons ?? [],
   };
 }

@@ -33,7 +33,7 @@ export function metricOf(
   analysed: readonly Unit[],
   clock: Clock,
   end: bigint | null,
-): OracleMetric {
+): Omit<OracleMetric, "ledger"> {
   const parts = metric.per === null ? [metric.of] : [metric.of, metric.per];
   const matched = parts.map((part) => new Set(matchedRows(part, rows, counted)));
   const numberless = parts.flatMap((part, place) =>

@@ -2,6 +2,7 @@ import { type ColumnTable, op, escape as rowwise } from "arquero";
 import type { Plan } from "../../src/plan/types.ts";
 import { countCopies, rowAt, type SettledRow, settleRows } from "./ledger.ts";
 import { enrolledOf, levelOf, levelsOf } from "./levels.ts";
+import { metricLedger } from "./metric-ledger.ts";
 import { byVariant, metricOf } from "./metrics.ts";
 import { ascending } from "./number.ts";
 import { readRows } from "./rows.ts";
@@ -60,7 +61,10 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
     facts: { ...factsOf(plan, rows, ended, units, end, clock), analysedByDay: byDay(plan, analysed, clock) },
-    metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock, end)),
+    metrics: plan.metrics.map((metric) => ({
+      ...metricOf(plan, metric, rows, { counted, before }, analysed, clock, end),
+      ledger: metricLedger(plan, metric, rows, ended),
+    })),
     places: placesOf(plan, units, analysed, clock),
   };
   return { clock, rows, ended, units, result };

@@ -20,6 +20,8 @@ export interface Outcome {
 
 export interface MetricOutcome {
   readonly metric: string;
+  /** By row line: rows, and the sum of its column as text. */
+  readonly ledger: Readonly<Record<string, readonly [number, string | null]>>;
   readonly leftOut: ByVariant;
   readonly countedRows: number;
   readonly countedWithoutNumber: number;
@@ -67,6 +69,7 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
       const isRatio = plan.metrics.some(({ name, per: part }) => name === metric.metric && part !== null);
       return {
         metric: metric.metric,
+        ledger: metricLines(metric.ledger),
         leftOut: metric.leftOut,
         countedRows: metric.countedRows,
         countedWithoutNumber: metric.countedWithoutNumber,
@@ -103,6 +106,7 @@ export function outcomeOfEngine(
       const cells = cellsOf(metric.of);
       return {
         metric: metric.metric,
+        ledger: metricLines(reduction.metricLedgers[m]?.lines ?? []),
         leftOut: metric.leftOut,
         countedRows: metric.countedRows,
         countedWithoutNumber: metric.countedWithoutNumber,
@@ -126,6 +130,8 @@ function groupsAt({ groups }: Reduction, m: number): MetricGroups {
   if (found === undefined) throw new Error(`no groups of metric ${m}`);
   return found;
 }
+const metricLines = (lines: OracleMetric["ledger"]): MetricOutcome["ledger"] =>
+  Object.fromEntries(lines.map(({ id, rows, sum }) => [id, [rows, sum === null ? null : nanoText(sum)] as const]));
 
 const isAdjusted = (plan: Plan, metric: string) =>
   plan.metrics.some(({ name, adjustFor }) => name === metric && adjustFor !== null);

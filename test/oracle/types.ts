@@ -79,6 +79,8 @@ export interface OracleSince {
 
 export interface OracleMetric {
   readonly metric: string;
+  /** Every row line, for the rows that `of` matches; sum in 10^-9, null where `of` takes no column. */
+  readonly ledger: readonly { readonly id: string; readonly rows: number; readonly sum: bigint | null }[];
   readonly leftOut: ByVariant;
   readonly countedRows: number;
   readonly countedWithoutNumber: number;

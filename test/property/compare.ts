@@ -21,7 +21,7 @@ export function departures(plan: Plan, oracle: OracleResult, { reduction, quanti
 }
 
 /** The ledger adds up, and so does each unit line over the variants, but for units outside whose variant the plan lacks. */
-function sums({ rowsRead, rowLines, unitsSeen, unitLines }: Reduction): string[] {
+function sums({ rowsRead, rowLines, unitsSeen, unitLines, metricLedgers }: Reduction): string[] {
   const rows = rowLines.reduce((sum, line) => sum + line.rows, 0);
   const units = unitLines.reduce((sum, line) => sum + line.units, 0);
   const lines = unitLines.filter(({ id, units: all, byVariant }) => {
@@ -31,6 +31,11 @@ function sums({ rowsRead, rowLines, unitsSeen, unitLines }: Reduction): string[]
   return [
     ...(rows === rowsRead ? [] : [`the row lines hold ${rows} rows, but ${rowsRead} were read`]),
     ...(units === unitsSeen ? [] : [`the unit lines hold ${units} units, but ${unitsSeen} were seen`]),
+    ...metricLedgers.flatMap(({ metric, lines: own }) =>
+      own.flatMap(({ id, rows: some }, at) =>
+        some <= (rowLines[at]?.rows ?? 0) ? [] : [`${metric}, line ${id}: ${some} rows of ${rowLines[at]?.rows}`],
+      ),
+    ),
     ...lines.map(({ id, units: all, byVariant }) => `line ${id}: ${all} units, ${byVariant?.join(" + ")} by variant`),
   ];
 }

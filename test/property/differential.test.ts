@@ -9,6 +9,7 @@ import { drawForm, type Form } from "../oracle/random/write.ts";
 import { covariateRules } from "./rules/covariates.ts";
 import { dayRules } from "./rules/days.ts";
 import { ledgerRules } from "./rules/ledger.ts";
+import { metricLedgerRules } from "./rules/metric-ledger.ts";
 import type { Rules } from "./rules/seen.ts";
 import { soundnessRules } from "./rules/soundness.ts";
 import { subgroupRules } from "./rules/subgroups.ts";
@@ -25,6 +26,7 @@ const RULES: Rules = {
   ...covariateRules,
   ...dayRules,
   ...ledgerRules,
+  ...metricLedgerRules,
   ...soundnessRules,
   ...subgroupRules,
   ...timeRules,

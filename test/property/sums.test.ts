@@ -44,6 +44,7 @@ function wrong(change: Partial<CellTable>): string[] {
     })),
     since: null,
     quantile: null,
+    ledger: [],
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null, covariate: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);

@@ -78,6 +78,21 @@ describe("report.json", () => {
       expect(sum(flow.units.map(({ units }) => units))).toBe(flow.unitsSeen);
     }
   });
+
+  it("holds the ledger of each metric's rows by the lines of all rows, with a sum where the metric takes a column", () => {
+    const { flow } = reportJson(cases.several);
+    expect(flow.metrics.length).toBeGreaterThan(1);
+    for (const { lines } of flow.metrics) expect(lines.map(({ id }) => id)).toEqual(flow.rows.map(({ id }) => id));
+    const summed = flow.metrics.flatMap(({ metric, lines }) =>
+      lines.every(({ sum }) => sum !== null) ? [metric] : [],
+    );
+    expect(summed).toEqual(
+      cases.several.plan.metrics.flatMap(({ name, of }) => ("column" in of.aggregate ? [name] : [])),
+    );
+    // 5 duplicates of 812.35 kr each
+    const fare = flow.metrics.find(({ metric }) => metric === summed[0]);
+    expect(fare?.lines[1]).toMatchObject({ id: "duplicate", rows: 5, sum: 4061.75 });
+  });
 });
 
 describe("a number on its way into report.json", () => {

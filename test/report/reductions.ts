@@ -107,9 +107,18 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       analysedByDay: [],
       subgroups: [],
       soundness: soundnessOf(plan, enrolled),
+      firstKeptUs: 1_772_407_300_000_000n,
+      lastKeptUs: 1_773_615_500_000_000n,
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
     groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
+    metricLedgers: plan.metrics.map(({ name, of }) => ({
+      metric: name,
+      lines: rowLines.map(({ id, rows }) => {
+        const own = Math.floor(rows / 40);
+        return { id, rows: own, sum: "column" in of.aggregate ? BigInt(own) * 812_350_000_000n : null };
+      }),
+    })),
     rejectReasons: [
       { reason: "at is not a time", rows: 30 },
       { reason: "fare is not a number", rows: 11 },

@@ -9,14 +9,17 @@ export { atEnrolment, type EnrolmentKey, enrolmentKey, enrolments, needsEnrollin
 export * from "./ledger.ts";
 /** Levels of subgroup columns. */
 export * from "./levels.ts";
+export { metricRows, PLACE, placeOf } from "./metricRows.ts";
 /** Order statistics. */
 export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
-export { brokenQuotes, listTable } from "./read.ts";
+export { brokenQuotes, linesWithSurplus, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
 export * from "./sinceEnrolment.ts";
 export { sizes } from "./sizes.ts";
 export * from "./soundness.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
+/** One unit, row by row. */
+export { nearestUnit, rowsOfUnit, unitEnd } from "./trace.ts";
 export { candidates, units } from "./units.ts";

@@ -37,9 +37,9 @@ export const unitsWithFate = (fate: number, unknownVariantLine: number): Stateme
   WHERE e.line > ${unknownVariantLine}
   GROUP BY e.variant`;
 
-/** First and last enrolment of the analysed. */
-export const enrolmentRange = (analysedLine: number): Statement => sql`
-  SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line = ${analysedLine}`;
+/** First and last enrolment of units on a line or a later one. */
+export const enrolmentRange = (fromLine: number): Statement => sql`
+  SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line >= ${fromLine}`;
 
 /** Of the analysed, those that enrolled in each incident. Gives variant, units<k>. */
 export function unitsInIncidents(incidents: number): Statement {

@@ -3,6 +3,7 @@ import { FATE, type Layout, type PartLayout, unitLineIds } from "../layout.ts";
 import type { DayRun, Step } from "../zone.ts";
 import { type Dialect, localDay } from "./dialect.ts";
 import { daysUs, followUpUs } from "./enrolments.ts";
+import { placeOf } from "./metricRows.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /**
@@ -26,8 +27,6 @@ export function candidates(
   dialect: Dialect,
 ): Statement {
   const analysed = unitLineIds(plan).length - 1;
-  const end = plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
-  const place = layout.hasTime ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END` : sql`0`;
   const isShort = plan.followUp !== null && plan.followUp.days < BITS;
   const aggregates = layout.parts.flatMap((part, p) => [
     sql`${aggregate(part, isShort, days, dialect)} AS ${name(`s${p}`)}`,
@@ -85,7 +84,7 @@ export function candidates(
         ...metricRows,
       ])}
       FROM (
-        SELECT ${list([sql`e.rowid AS id, e.enrolled_us, ${place} AS place`, ...daysBefore(plan), sql`r.*`])}
+        SELECT ${list([sql`e.rowid AS id, e.enrolled_us, ${placeOf(plan, layout)} AS place`, ...daysBefore(plan), sql`r.*`])}
         FROM rows AS r
         JOIN enrolments AS e ON e.unit = r.unit
         WHERE r.fate = ${FATE.seen} AND (e.line = ${analysed} OR e.other_way OR e.any_follow_up)

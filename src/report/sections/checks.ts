@@ -18,7 +18,7 @@ export interface CheckText {
   readonly figures: readonly { readonly name: string; readonly value: string }[];
 }
 
-const TITLES: Readonly<Record<string, string>> = {
+export const TITLES: Readonly<Record<string, string>> = {
   allocation: "Groups of the planned size",
   "allocation-by-day": "Groups of the planned size on every day",
   "allocation-by-level": "Groups of the planned size in every subgroup",

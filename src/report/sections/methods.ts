@@ -1,20 +1,17 @@
 import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
-import type { InputFile, Reduction } from "../../engine/types.ts";
+import type { Reduction } from "../../engine/types.ts";
 import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
-import { count, list, planPercent } from "../../words/index.ts";
+import { list, planPercent } from "../../words/index.ts";
 import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
+import { type FromWhat, fromWhat } from "./from-what.ts";
 import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
-export interface MethodsSection {
+export interface MethodsSection extends FromWhat {
   readonly methods: readonly Method[];
-  readonly files: readonly FileText[];
-  readonly lists: readonly FileText[];
-  readonly facts: readonly { readonly name: string; readonly value: string }[];
   readonly cautions: readonly string[];
-  readonly planText: string;
 }
 export interface Method {
   /** What a term of the report links to. */
@@ -23,53 +20,22 @@ export interface Method {
   readonly how: string;
   readonly source: string;
 }
-export interface FileText {
-  readonly name: string;
-  readonly rows: string;
-  readonly bytes: string;
-  readonly fingerprint: string;
-}
 
 export function methodsSection(inputs: ReportInputs): MethodsSection {
-  const { plan, planText, reduction, effects, choices } = inputs;
+  const { plan, reduction, effects, choices } = inputs;
   return {
     methods: methods(plan, effects, choices, reduction),
-    files: reduction.inputs.map(fileText),
-    lists: reduction.lists.map(fileText),
-    facts: facts(inputs),
     cautions: cautions(plan),
-    planText,
+    ...fromWhat({
+      ...inputs,
+      more: [
+        ["Made from", inputs.fromCells === true ? FROM_CELLS : null],
+        ["cells.json, SHA-256", inputs.cellsSha256 ?? null],
+        [REPLACES, inputs.rerun?.previous.sha256 ?? null],
+        ["The rule, kept before the start", registeredText(plan)],
+      ],
+    }),
   };
-}
-
-function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
-  return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
-}
-
-function facts({ plan, planSha256, version, reduction: { engine }, ...of }: ReportInputs) {
-  const { owner, link, ended, notes, decided } = plan.texts;
-  const decision =
-    decided === null
-      ? null
-      : [decided.what, decided.by && `by ${decided.by}`, decided.on && `on ${decided.on}`, decided.because]
-          .filter((part) => part !== null && part !== "")
-          .join(", ");
-  const known: readonly (readonly [string, string | null])[] = [
-    ["Plan, SHA-256", planSha256],
-    ["Made from", of.fromCells === true ? FROM_CELLS : null],
-    ["cells.json, SHA-256", of.cellsSha256 ?? null],
-    [REPLACES, of.rerun?.previous.sha256 ?? null],
-    ["The rule, kept before the start", registeredText(plan)],
-    ["closeout", version],
-    ["Engine", `${engine.name} ${engine.version}`],
-    ["Days and times", plan.timezone],
-    ["Owner", owner],
-    ["Link", link],
-    ["Why it ended", ended],
-    ["Decided", decision],
-    ["Notes", notes],
-  ];
-  return known.flatMap(([name, value]) => (value === null || value === "" ? [] : [{ name, value }]));
 }
 
 /** Whether the rule is the one that was kept before the start; null where none was. */
