@@ -1,31 +1,39 @@
 /** The library entry: a plan in, a decision report out. */
-import { createHash } from "node:crypto";
 import { readFile } from "node:fs/promises";
 import path from "node:path";
-import { type Arm, arms } from "./cells/index.ts";
-import { checks as soundnessChecks } from "./checks/index.ts";
-import {
-  adjustedPairs,
-  effects as allEffects,
-  conclusion as concluded,
-  contrastFigures,
-  otherChoices,
-  type Pair,
-  withOrderStatistics,
-} from "./decision/index.ts";
-import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
-import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { decisionReport } from "./compute.ts";
+import { type Progress, UnusableLog } from "./engine/index.ts";
+import { judged } from "./judge.ts";
+import { measuredFromFile } from "./kept/from-file.ts";
+import { measure } from "./measure.ts";
+import { loadPlan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
 import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
-import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
+import { type ReportJson, reportJsonSchema } from "./report/index.ts";
+import { replacedReport } from "./rerun.ts";
+import { rerunOf } from "./steps.ts";
 import { version } from "./version.ts";
 
+// before the end: plan, log and soundness without any result
+export { type CheckOutcome, check } from "./check.ts";
+export { type Compared, compareReports } from "./compare.ts";
+export type { SizeAnswer, SizeQuestion } from "./decision/index.ts";
+export { type BlindJson, blindJsonSchema } from "./report/check/index.ts";
+export { type Sealed, seal } from "./seal.ts";
+export { size } from "./size.ts";
+// one unit, row by row
+export { type TraceOptions, type TraceOutcome, trace } from "./trace.ts";
+export { type Verified, type VerifyOptions, verify } from "./verify/verify.ts";
 export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };
 
 export interface CloseoutOptions {
   /** The report's folder; without it out/<experiment> in the current folder. */
   readonly out?: string | undefined;
+  /** The report.json of the report that this one replaces, or "none"; without it the one in the folder. */
+  readonly previous?: string | undefined;
+  /** The cells.json of an earlier report: its figures are taken, and the log is not read. */
+  readonly fromCells?: string | undefined;
   readonly threads?: number | undefined;
   /** Writes figures/*.svg, page-one.html and decision.csv too. */
   readonly figures?: boolean | undefined;
@@ -64,20 +72,32 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   const folder = plan === null ? null : await openFolder(plan.experiment, options.out);
   if (folder !== null && "refused" in folder) return { status: 2, text: folder.refused };
   try {
-    const found = await withReduction(
-      plan,
-      loaded.source,
-      path.dirname(path.resolve(planPath)),
-      { ...options, rejectsTo: folder?.staged("rejects.csv") },
-      measured,
-    );
+    const planFolder = path.dirname(path.resolve(planPath));
+    const fromCells = options.fromCells !== undefined;
+    const found =
+      plan !== null && options.fromCells !== undefined
+        ? await measuredFromFile(plan, planText, options.fromCells)
+        : await measure(plan, loaded.source, planFolder, { ...options, rejectsTo: folder?.staged("rejects.csv") });
+    if ("refused" in found) return { status: 2, text: found.refused };
     if (plan === null || folder === null || "problems" in found) {
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const rendered = await decisionReport(plan, planText, found);
+    const replaced = await replacedReport(
+      folder,
+      options.previous,
+      plan.experiment,
+      planText,
+      found.reduction,
+      fromCells,
+    );
+    if ("refused" in replaced) return { status: 2, text: replaced.refused };
+    const judgement = judged(plan, found);
+    const now = { plan, planText, planFolder, measured: found, judged: judgement, fromCells };
+    const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
+    const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
     options.signal?.throwIfAborted();
-    const kept = await folder.keep(rendered.files);
+    const kept = await folder.keep(rendered.files, replaced.history);
     const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
     const terminal = rendered.terminal({
       report: path.join(folder.shown, "report.html"),
@@ -93,38 +113,4 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   } finally {
     await folder?.discard();
   }
-}
-
-/** All that the report is made from, of constant size. */
-interface Measured {
-  readonly reduction: Reduction;
-  /** Per metric, per variant, both in plan order. */
-  readonly arms: readonly (readonly Arm[])[];
-  /** The adjusted arms of metrics that the plan adjusts for a covariate. */
-  readonly pairs: readonly Pair[];
-}
-
-/** While the engine still holds the units: the arms, and what only the units can tell of them. */
-async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
-  const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
-  const pairs = await adjustedPairs(plan, reduction, session.adjusted);
-  return { reduction, arms, pairs };
-}
-
-function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
-  return plan.metrics.map((metric, m) => {
-    const cells = metrics[m];
-    if (cells === undefined) throw new Error(`no cells for metric ${metric.name}`);
-    return arms(metric, cells, plan.variants.length);
-  });
-}
-
-/** From counts, cells and arms to the report's files; no file is read or written but the templates. */
-function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
-  const effects = allEffects(plan, arms, reduction, pairs);
-  const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
-  const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
-  const choices = otherChoices(plan, reduction, arms, pairs, effects);
-  const planSha256 = createHash("sha256").update(planText).digest("hex");
-  return renderReport({ plan, planText, planSha256, version, reduction, checks, effects, choices, conclusion });
 }

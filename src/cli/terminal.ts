@@ -3,8 +3,8 @@ import pc from "picocolors";
 import type { Progress } from "../index.ts";
 import { progressText } from "./progress.ts";
 
-/** Done; a bug of ours; plan or arguments wrong; the log cannot be used. After a stop by signal: 128 + its number. */
-export type ExitStatus = 0 | 1 | 2 | 3 | 130 | 143;
+/** Done; a bug of ours; plan or arguments wrong; the log cannot be used; a report does not hold. After a stop by signal: 128 + its number. */
+export type ExitStatus = 0 | 1 | 2 | 3 | 4 | 130 | 143;
 
 /** Where words go. Results go to stdout, everything else to stderr. */
 export interface Terminal {

@@ -7,6 +7,7 @@ const REASONS: Readonly<Record<string, string>> = {
   EISDIR: "a folder is there, and a file is needed",
   ENAMETOOLONG: "the name is too long",
   ENOSPC: "the disk is full",
+  EFBIG: "files may not be that large",
   EDQUOT: "your share of the disk is full",
 };
 const WRITING = ["mkdir", "mkdtemp", "open", "write", "rename", "copyfile"];

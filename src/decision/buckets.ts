@@ -1,5 +1,5 @@
 import { type BucketSums, bucketNumbers, bucketPairs, bucketSums, type PairSums, withoutX } from "../cells/index.ts";
-import type { CellTable, JointTable, MetricCells } from "../engine/types.ts";
+import type { CellTable, JointTable, KeptBuckets, MetricCells } from "../engine/types.ts";
 import type { Metric } from "../plan/types.ts";
 import { armsAlike, type BucketCells } from "../stats/index.ts";
 
@@ -7,8 +7,10 @@ import { armsAlike, type BucketCells } from "../stats/index.ts";
 export interface Buckets {
   /** How far its arms look like one distribution, 1 to 0. */
   readonly alike: number;
-  /** What it is drawn from. */
-  readonly cells: BucketCells;
+  /** What it is drawn from; null where the buckets were not kept. */
+  readonly cells: BucketCells | null;
+  /** What was drawn from them before they were given up. */
+  readonly drawn: KeptBuckets["drawn"];
   /** Whole numbers of both arms, which tell its draws from those of other cells. */
   readonly numbers: readonly (readonly (number | bigint)[])[];
 }
@@ -18,6 +20,7 @@ export type BucketsOf = (control: number, variant: number, isAdjusted: boolean) 
 
 /** @returns null for a quantile, which is not resampled */
 export function bucketsOf(metric: Metric, cells: MetricCells, variants: number): BucketsOf | null {
+  if (cells.kept !== undefined && metric.summary !== "quantile") return ofKept(cells.kept);
   switch (metric.summary) {
     case "quantile":
       return null;
@@ -74,7 +77,15 @@ function ofAdjusted(of: CellTable, { joint }: NonNullable<MetricCells["covariate
 }
 
 function withAlike(cells: BucketCells, numbers: Buckets["numbers"]): Buckets {
-  return { alike: armsAlike(cells), cells, numbers };
+  return { alike: armsAlike(cells), cells, drawn: null, numbers };
+}
+
+function ofKept(kept: readonly KeptBuckets[]): BucketsOf {
+  return (c, t, isAdjusted) => {
+    const found = kept.find((one) => one.control === c && one.variant === t && one.isAdjusted === isAdjusted);
+    if (found === undefined) throw new Error(`nothing was kept of the buckets of variants ${c} and ${t}`);
+    return { alike: found.alike, cells: null, drawn: found.drawn, numbers: [] };
+  };
 }
 
 function pairCells(

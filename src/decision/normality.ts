@@ -1,7 +1,16 @@
 import type { ContrastFigures } from "../checks/types.ts";
 import type { Plan } from "../plan/types.ts";
-import { type Counts, DRAWS, DRAWS_OF_SECONDARY, isAbsent, normality, resampled } from "../stats/index.ts";
+import {
+  type Counts,
+  DRAWS,
+  DRAWS_OF_SECONDARY,
+  isAbsent,
+  normality,
+  type Resampled,
+  resampled,
+} from "../stats/index.ts";
 import type { ArmFigures } from "../stats/types.ts";
+import type { Buckets } from "./buckets.ts";
 import { type Compared, contrastWith } from "./compared.ts";
 import { deciding } from "./deciding.ts";
 import type { ContrastNormality, Effect } from "./types.ts";
@@ -25,8 +34,21 @@ export function withNormality(effect: Effect, plan: Plan, compared: Compared, cr
     resampled:
       estimate === null || standardError === null
         ? null
-        : resampled(buckets.cells, { estimate, standardError }, critical, draws, buckets.numbers, sharesOf(effect)),
+        : { ...drawnOf(buckets, { estimate, standardError }, critical, draws, sharesOf(effect)), critical },
   };
+}
+
+/** Drawn from the buckets; where they are gone, what was drawn before for the same critical value. */
+function drawnOf(
+  { cells, drawn, numbers }: Buckets,
+  difference: { readonly estimate: number; readonly standardError: number },
+  critical: number,
+  draws: number,
+  shares: Parameters<typeof resampled>[5],
+): Resampled {
+  if (cells !== null) return resampled(cells, difference, critical, draws, numbers, shares);
+  if (drawn?.critical === critical) return drawn.found as Resampled;
+  return { bootstrap: { notDrawn: "no-buckets" }, randomisation: { notDrawn: "no-buckets" } };
 }
 
 function otherContrast(

@@ -38,8 +38,8 @@ export interface Effect {
   readonly power: Power;
   /** Of the contrast that decides; null for a quantile, and where an arm's shape is not known. */
   readonly normality: ContrastNormality | null;
-  /** Of the contrast that decides; null for a quantile, and where it has no interval. */
-  readonly resampled: Resampled | null;
+  /** Of the contrast that decides, at which critical value; null for a quantile, and where it has no interval. */
+  readonly resampled: (Resampled & { readonly critical?: number }) | null;
 }
 
 /** Whether the normal approximation is good enough for one contrast (METHODS 3). */

@@ -1,5 +1,9 @@
-import { mkdir, mkdtemp, readFile, rename, rm, writeFile } from "node:fs/promises";
+import { renameSync } from "node:fs";
+import { copyFile, mkdir, mkdtemp, readdir, readFile, rm, stat, writeFile } from "node:fs/promises";
+import os from "node:os";
 import path from "node:path";
+import { HISTORY, keptReport } from "./history.ts";
+import { putInPlace } from "./in-place.ts";
 
 /**
  * The report's folder. Files are written beside it first and put in place only when all of them stand, so that a run that
@@ -9,13 +13,29 @@ export interface ReportFolder {
   readonly path: string;
   /** As the user named it, or as it lies from the current folder. */
   readonly shown: string;
+  /** The report.json that lies there, as text; null where no report does. */
+  readonly earlier: string | null;
+  /** The report.json of an earlier run, kept in history/, by its fingerprint. */
+  kept(sha256: string): Promise<string | null>;
   /** Where a file of this run is written until keep(). */
   staged(file: string): string;
-  /** Writes the other files and puts all of them in place; gives their paths. */
-  keep(files: readonly { readonly name: string; readonly text: string }[]): Promise<string[]>;
+  /** Writes the other files and puts all of them in place, what is to be kept into history/ first; gives the files' paths. */
+  keep(
+    files: readonly { readonly name: string; readonly text: string }[],
+    history?: readonly Kept[],
+  ): Promise<string[]>;
   /** Removes what was not kept. */
   discard(): Promise<void>;
 }
+
+/** A report for history/: the one that lies in the folder, or only the report.json that was named. */
+export interface Kept {
+  readonly name: string;
+  readonly json: string | null;
+}
+
+/** What of a report is kept: all but rejects.csv, which may hold personal data and follows from the log. */
+const KEPT_FILES = ["report.html", "report.json", "summary.md", "effects.csv", "cells.json"];
 
 /** Opens out, or out/<experiment> in the current folder. A folder with another experiment's report is refused. */
 export async function openFolder(
@@ -24,14 +44,16 @@ export async function openFolder(
 ): Promise<ReportFolder | { readonly refused: string }> {
   const shown = out ?? path.join("out", folderName(experiment));
   const folder = path.resolve(shown);
-  const other = await experimentIn(folder);
-  if (other !== null && other !== experiment) {
+  const lying = await lyingIn(path.join(folder, "report.json"));
+  const owner = lying ?? (await lyingIn(path.join(folder, "check.json")));
+  if (owner !== null && owner.experiment !== experiment) {
     return {
-      refused: `${shown} holds the report of another experiment, "${other}". Nothing was computed and no file was written. Name another folder with --out.`,
+      refused: `${shown} holds the report of another experiment, "${owner.experiment}". Nothing was computed and no file was written. Name another folder with --out.`,
     };
   }
   await mkdir(path.dirname(folder), { recursive: true });
-  const staging = await mkdtemp(path.join(path.dirname(folder), ".closeout-"));
+  await removeLeftBehind(path.dirname(folder));
+  const staging = await mkdtemp(path.join(path.dirname(folder), `${stagingPrefix()}${process.pid}-`));
   const names = new Set<string>();
   const staged = (file: string) => {
     names.add(file);
@@ -40,13 +62,19 @@ export async function openFolder(
   return {
     path: folder,
     shown,
+    earlier: lying?.text ?? null,
+    kept: (sha256) => keptReport([folder], sha256),
     staged,
-    keep: async (files) => {
+    keep: async (files, history = []) => {
       for (const file of files) await writeFile(staged(file.name), file.text);
-      await mkdir(folder, { recursive: true });
-      const all = [...names].sort();
-      for (const file of all) await rename(path.join(staging, file), path.join(folder, file));
-      return all.map((file) => path.join(folder, file));
+      for (const one of history) await stageKept(one, folder, path.join(staging, HISTORY, one.name));
+      await mkdir(history.length > 0 ? path.join(folder, HISTORY) : folder, { recursive: true });
+      const missing = [];
+      for (const { name } of history) if (!(await isThere(path.join(folder, HISTORY, name)))) missing.push(name);
+      // From here on nothing waits: no signal can come between.
+      for (const name of missing) renameSync(path.join(staging, HISTORY, name), path.join(folder, HISTORY, name));
+      putInPlace([...names], staging, folder);
+      return [...names].sort().map((file) => path.join(folder, file));
     },
     discard: () => rm(staging, { recursive: true, force: true }),
   };
@@ -63,11 +91,50 @@ export function folderName(experiment: string): string {
   return name === "" ? "experiment" : name;
 }
 
-async function experimentIn(folder: string): Promise<string | null> {
+async function lyingIn(file: string): Promise<{ readonly experiment: string; readonly text: string } | null> {
   try {
-    const found = JSON.parse(await readFile(path.join(folder, "report.json"), "utf8")) as { experiment?: unknown };
-    return typeof found.experiment === "string" ? found.experiment : null;
+    const text = await readFile(file, "utf8");
+    const { experiment } = JSON.parse(text) as { experiment?: unknown };
+    return typeof experiment === "string" ? { experiment, text } : null;
   } catch {
     return null;
+  }
+}
+
+async function stageKept({ json }: Kept, folder: string, into: string): Promise<void> {
+  await mkdir(into, { recursive: true });
+  if (json !== null) return writeFile(path.join(into, "report.json"), json);
+  for (const file of KEPT_FILES) {
+    if (await isThere(path.join(folder, file))) await copyFile(path.join(folder, file), path.join(into, file));
+  }
+}
+
+function isThere(file: string): Promise<boolean> {
+  return stat(file).then(
+    () => true,
+    () => false,
+  );
+}
+
+/** With the machine's name: the number of a process says something on its own machine only. */
+const stagingPrefix = () => `.closeout-${os.hostname().replace(/[^A-Za-z0-9]+/g, "_")}-`;
+
+/** What a run of this machine that was killed has left beside the folder. */
+async function removeLeftBehind(parent: string): Promise<void> {
+  const prefix = stagingPrefix();
+  for (const name of await readdir(parent)) {
+    const [, process = ""] = name.startsWith(prefix) ? (/^(\d+)-/.exec(name.slice(prefix.length)) ?? []) : [];
+    if (process !== "" && !isRunning(Number(process))) {
+      await rm(path.join(parent, name), { recursive: true, force: true }).catch(() => undefined);
+    }
+  }
+}
+
+function isRunning(pid: number): boolean {
+  try {
+    process.kill(pid, 0);
+    return true;
+  } catch (error) {
+    return (error as NodeJS.ErrnoException).code !== "ESRCH";
   }
 }

@@ -1,18 +1,25 @@
+import type { ChangesJson } from "./changes/types.ts";
 import { namesToIsolate } from "./direction.ts";
 import { controlOf, kindText, whenText } from "./plan-words.ts";
+import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
 import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
+import { type ChangesSection, changesSection } from "./sections/changes.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type ConsortTable, consortTable } from "./sections/consort.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
+import { dayParts } from "./sections/days.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
 import { type DesignSection, designSection } from "./sections/design.ts";
 import { type DistributionFigure, distributionFigures } from "./sections/distribution.ts";
 import { type FlowFigure, flowFigure } from "./sections/flow.ts";
+import { type IncidentText, incidentTexts } from "./sections/incidents.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
+import { type RerunLines, rerunLines } from "./sections/rerun.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
+import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
 import { withoutControls } from "./typeset.ts";
@@ -31,7 +38,12 @@ export interface Page {
   readonly confidence: string;
   readonly contents: readonly { readonly number: number; readonly id: string; readonly title: string }[];
   readonly decision: DecisionSection;
+  /** Null in a first report. */
+  readonly rerun: RerunLines | null;
+  readonly changes: ChangesSection | null;
   readonly checks: ChecksSection;
+  /** The end of section 3. */
+  readonly incidents: readonly IncidentText[];
   readonly design: DesignSection;
   readonly counted: CountedSection;
   readonly flow: FlowFigure;
@@ -55,6 +67,9 @@ export interface Page {
 export interface FurtherOnMetric {
   readonly distribution: DistributionFigure | null;
   readonly sampling: readonly SamplingPart[];
+  readonly accrual: readonly AccrualPart[];
+  readonly days: readonly AccrualPart[];
+  readonly subgroups: readonly SubgroupPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
 }
@@ -62,6 +77,7 @@ export interface FurtherOnMetric {
 /** Numbers are fixed (DESIGN 8): a first report has no section 2. */
 const CONTENTS = [
   { number: 1, id: "decision", title: "Decision" },
+  { number: 2, id: "changes", title: "What changed" },
   { number: 3, id: "trust", title: "Can the data be trusted?" },
   { number: 4, id: "counted", title: "Who was counted" },
   { number: 5, id: "metrics", title: "Each measure" },
@@ -69,10 +85,13 @@ const CONTENTS = [
   { number: 7, id: "methods", title: "Methods, sources, cautions" },
 ] as const;
 
-export async function page(inputs: ReportInputs): Promise<Page> {
+export async function page(inputs: ReportInputs, changes: ChangesJson | null = null): Promise<Page> {
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
+  const accrual = await accrualParts(plan, effects, inputs.accruals, reduction);
+  const days = await dayParts(plan, effects, inputs.daysSince);
+  const subgroups = await subgroupParts(plan, effects, inputs.subgroups);
   const distributions = await distributionFigures(plan, reduction, effects);
   const baseline = baselineTable(plan, reduction);
   const methods = methodsSection(inputs);
@@ -87,9 +106,12 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     undecidable: conclusion.decision === "undecidable",
     control: controlOf(plan).name,
     confidence: `${Number((plan.decision.confidence * 100).toPrecision(12))}%`,
-    contents: CONTENTS,
+    contents: CONTENTS.filter(({ number }) => number !== 2 || changes !== null),
     decision: await decisionSection(inputs),
+    rerun: changes === null ? null : rerunLines(changes, plan),
+    changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
+    incidents: incidentTexts(inputs),
     design: designSection(
       plan,
       effects.some(({ resampled }) => resampled !== null),
@@ -101,6 +123,9 @@ export async function page(inputs: ReportInputs): Promise<Page> {
       ...metric,
       distribution: distributions.get(metric.name) ?? null,
       sampling: sampling.get(metric.name) ?? [],
+      accrual: accrual.get(metric.name) ?? [],
+      days: days.get(metric.name) ?? [],
+      subgroups: subgroups.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),

@@ -10,7 +10,7 @@ export function controlOf(plan: Plan): Variant {
 }
 
 /** "2 to 15 March 2026, each visitor followed for 7 days": when counted units were enrolled, in the plan's zone. */
-export function whenText(plan: Plan, { facts }: Reduction): string {
+export function whenText(plan: Plan, { facts }: Pick<Reduction, "facts">): string {
   const parts: string[] = [];
   if (facts.firstEnrolledUs !== null && facts.lastEnrolledUs !== null) {
     parts.push(dateSpan(dayOf(facts.firstEnrolledUs, plan.timezone), dayOf(facts.lastEnrolledUs, plan.timezone)));

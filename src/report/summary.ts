@@ -1,4 +1,6 @@
-import { nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
+import { lookSentences, nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
+import type { ChangesJson } from "./changes/types.ts";
+import { saidBefore, whatChanged } from "./changes/words.ts";
 import { directed, namesToIsolate } from "./direction.ts";
 import { whenText } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
@@ -7,7 +9,7 @@ import type { ReportInputs } from "./types.ts";
 const MOST_FOUND = 5;
 
 /** summary.md: the decision in about twelve lines, to paste into a message or a ticket. */
-export function summaryMd(inputs: ReportInputs): string {
+export function summaryMd(inputs: ReportInputs, changes: ChangesJson | null = null): string {
   const { plan, reduction, conclusion } = inputs;
   const when = whenText(plan, reduction);
   const lines = [
@@ -16,6 +18,7 @@ export function summaryMd(inputs: ReportInputs): string {
     `**${plain(conclusion.sentence)}**`,
     "",
     ...sentences(inputs).map((sentence) => `- ${plain(sentence)}`),
+    ...(changes === null ? [] : [`- ${plain(saidBefore(changes))} What changed: ${plain(whatChanged(changes, plan))}`]),
     ...answers(inputs).map(({ question, answer }) => `- ${question} ${plain(answer)}`),
   ];
   const names = namesToIsolate([
@@ -34,7 +37,11 @@ function sentences(inputs: ReportInputs): string[] {
     conclusion.decision === "not-settled"
       ? [whyNotSettled(plan, reduction), untilThen(plan)]
       : nextSentences(plan, effects, conclusion, reduction).slice(0, 2);
-  return [...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND), ...then];
+  return [
+    ...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND),
+    ...lookSentences(plan, conclusion),
+    ...then,
+  ];
 }
 
 /** Text from the plan as text: nothing in it may turn into markup where the summary is pasted. */

@@ -14,6 +14,17 @@ export function typeset(page: Page): Page {
   return { ...set, names: page.names, units: page.units, terms: page.terms, methods: { ...set.methods, planText } };
 }
 
+/** Of two reports compared: no measure's unit is known there, and no name to set apart. */
+export function typesetPlainly<T extends object>(page: T): T {
+  return everyText(page, (text) => quotes(unbroken(withoutControls(text)))) as T;
+}
+
+/** The same of a page that shows the plan word for word. */
+export function typesetWithPlan<P extends { readonly methods: { readonly planText: string } }>(page: P): P {
+  const set = typesetPlainly(page);
+  return { ...set, methods: { ...set.methods, planText: page.methods.planText } };
+}
+
 function everyText(value: unknown, set: (text: string) => string): unknown {
   if (typeof value === "string") return set(value);
   if (Array.isArray(value)) return value.map((item) => everyText(item, set));

@@ -13,7 +13,7 @@ const UNDEFINED_OVER = 0.01;
 
 /** Why nothing was drawn, or what was drawn is not shown. */
 export interface NotDrawn {
-  readonly notDrawn: "few-units" | "few-events" | "no-spread" | "undefined-draws";
+  readonly notDrawn: "few-units" | "few-events" | "no-spread" | "undefined-draws" | "no-buckets";
 }
 
 export function isNotDrawn<Drawn>(found: Drawn | NotDrawn): found is NotDrawn {
@@ -30,6 +30,11 @@ export function tooFew(
   const events = shares === null ? [] : [shares.control, shares.variant];
   const fewest = Math.min(...events.flatMap(({ successes, n }) => [successes, n - successes]));
   return fewest < EVENTS_AT_LEAST ? { notDrawn: "few-events" } : null;
+}
+
+/** Whether so many draws reach the tails of an interval: an early look's boundary can lie beyond all of them. */
+export function drawsReach(alpha: number, draws: number): boolean {
+  return alpha * draws >= 4;
 }
 
 /** Whether too many of the draws had no T. */

@@ -22,6 +22,8 @@ export interface Dialect {
   epochUs(timestamp: Statement): Statement;
   /** Microseconds to subtract where the text states an offset, else NULL: the clock is the plan's. */
   statedOffsetUs(text: Statement): Statement;
+  /** Levenshtein distance of two texts. */
+  editDistance(a: Statement, b: Statement): Statement;
   /** 64-bit hash, for finding what may be equal; equality itself is tested on the text. */
   hash(...values: readonly Statement[]): Statement;
   /** 0..1023, the same on every engine: md5, and not the engine's own hash. */
@@ -80,6 +82,7 @@ export const duckdb: Dialect = {
     WHEN regexp_full_match(${text}, ${EPOCH}) THEN 0
     WHEN regexp_matches(${text}, ${`[T ].*[+-][0-9]{2}(:?[0-9]{2})?$`}) THEN ${offset(sql`regexp_extract(${text}, '[+-][0-9]{2}(:?[0-9]{2})?$')`)}
     END`,
+  editDistance: (a, b) => sql`levenshtein(${a}, ${b})`,
   hash: (...values) => sql`hash(${join(values, ", ")})`,
   bucket: (unit) => sql`CAST(md5_number(${unit}) & 1023 AS SMALLINT)`,
   toDouble: (decimal) => sql`CASE WHEN abs(${decimal}) < ${EXACT_BELOW}

@@ -20,7 +20,7 @@ export interface CheckText {
   readonly figures: readonly { readonly name: string; readonly value: string }[];
 }
 
-const TITLES: Readonly<Record<string, string>> = {
+export const TITLES: Readonly<Record<string, string>> = {
   allocation: "Groups of the planned size",
   "allocation-by-day": "Groups of the planned size on every day",
   "allocation-by-level": "Groups of the planned size in every subgroup",
@@ -84,7 +84,7 @@ export function tallyText(checks: readonly Check[]): string {
 function checkText(check: Check): CheckText {
   return {
     id: check.id,
-    title: TITLES[check.id] ?? capital(check.id.replaceAll("-", " ")),
+    title: titleOf(check.id),
     term: TERMS[check.id] ?? "",
     outcome: outcomeText(check.result, check.strong),
     sentence: check.sentence,
@@ -95,6 +95,11 @@ function checkText(check: Check): CheckText {
       .map(({ about, result, sentence }) => ({ about, outcome: outcomeText(result, false), sentence })),
     figures: figureTexts([...Object.entries(check.figures)], ""),
   };
+}
+
+/** The name of a check for the reader. */
+export function titleOf(id: string): string {
+  return TITLES[id] ?? capital(id.replaceAll("-", " "));
 }
 
 function outcomeText(result: CheckOutcome, strong: boolean): string {

@@ -1,13 +1,14 @@
 import { type ChoiceRow, type Choices, deciding, type Effect, measure, metricOf } from "../../decision/index.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
-import { capital, type Interval, plain, pText, quoted, type Scale } from "../../words/index.ts";
+import { capital, type Interval, pText, type Scale } from "../../words/index.ts";
 import { type ChoiceMark, choiceAxis, choiceStrip } from "../charts/choices.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
 import { choiceText, unchanged } from "../choice-words.ts";
 import { drawnEffects } from "../drawn.ts";
 import { effectText, pOrNone, type Signed, sixDigits, verdictText } from "../effect-text.ts";
+import { axisLabel, scaleText } from "../figure-words.ts";
 import { controlOf } from "../plan-words.ts";
 
 /** One contrast under other reasonable choices: words and figures as text, each row's line a drawing of its own. */
@@ -79,13 +80,13 @@ async function figure(
     id,
     title: `${effect.metric}${several ? `, ${effect.variant}` : ""}, under other reasonable choices`,
     reading: known.length === 0 ? ONE_AT_A_TIME : readingText(mark !== null),
-    plotHead: scaleText(scale, plan),
+    plotHead: scaleText(scale, controlOf(plan).name),
     rows: tableRows,
     axis:
       known.length === 0
         ? null
         : await draw(forestScale(axis, write), `${id}-axis`, {
-            title: `Axis of the drawing: ${scaleText(scale, plan)}`,
+            title: `Axis of the drawing: ${scaleText(scale, controlOf(plan).name)}`,
             description: `From ${write(axis.low)} to ${write(axis.high)}; the zero line is no difference.`,
           }),
     sentences: sentences(rows, metric, plan),
@@ -179,23 +180,6 @@ function readingText(hasMark: boolean): string {
     "Filled square: the plan\u2019s own choice; its estimate runs through all rows as a dotted line. Hollow square: another choice. Long upright: no difference.",
     ...(hasMark ? ["Short upright: what was asked for, or the limit."] : []),
   ].join(" ");
-}
-
-function scaleText(scale: Scale, plan: Plan): string {
-  switch (scale.kind) {
-    case "percent":
-      return `Difference in percent of the level with ${quoted(controlOf(plan).name)}`;
-    case "points":
-      return "Difference in percentage points";
-    case "amount":
-      return scale.unit === null ? "Difference" : `Difference in ${scale.unit}`;
-  }
-}
-
-function axisLabel(tick: number, scale: Scale): string {
-  const size = scale.kind === "amount" ? Math.abs(tick) : Math.abs(tick) * 100;
-  const text = plain(Number(size.toPrecision(3))) + (scale.kind === "percent" ? "%" : "");
-  return tick === 0 ? "0" : `${tick > 0 ? "+" : "\u2212"}${text}`;
 }
 
 const NUMBERS: readonly (readonly [

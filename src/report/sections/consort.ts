@@ -34,6 +34,7 @@ const AT = {
   before: { id: "before", text: "4 Before enrolment" },
   metrics: { id: "metrics", text: "5 Each measure" },
   power: { id: "power", text: "6 Power and the next test" },
+  looks: { id: "method-planned-looks", text: "7 Planned looks" },
   cautions: { id: "cautions", text: "7 Cautions" },
   rule: { id: "rule", text: "7 The rule" },
   unplanned: { id: "unplanned", text: "7 Planned and unplanned" },
@@ -79,7 +80,9 @@ export function consortTable(plan: Plan, { facts }: Reduction, hasBaseline: bool
     ["", "24a", "What each group in fact got", AT.trust, "as far as the log shows it: seen in two variants"],
     ["6a", "14", "Measures, fixed beforehand", AT.metrics],
     ["7a", "16a", "How the size was fixed", stated(plan.plannedUnits, AT.power)],
-    ["7b", "16b", "Looks before the end", AT.cautions, "the plan names none"],
+    plan.looks === null
+      ? ["7b", "16b", "Looks before the end", AT.cautions, "the plan names none"]
+      : ["7b", "16b", "Looks before the end", AT.looks],
     ["8a", "17a", "How the random order was made, and by whom", null],
     ["8b", "17b", "Kind of randomisation", AT.design, "planned shares; restrictions are not stated"],
     ["9, 10", "18, 19", "How the order was kept and carried out", null, "", "what came of it is tested in section 3"],

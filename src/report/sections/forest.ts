@@ -102,7 +102,7 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
     plotHead: "Difference in percent",
     groups,
     zeroLine: await draw(forestStrip(null, axis), "forest-zero", null),
-    axis: await draw(forestScale(axis, axisLabel), "forest-axis", axisText(axis)),
+    axis: await draw(forestScale(axis, percentLabel), "forest-axis", axisText(axis)),
     anyDrawn: drawn.length > 0,
     long: ordered.length > MOST_ROWS_UNCUT,
     numberColumns: NUMBERS.map(([head]) => head),
@@ -200,7 +200,7 @@ function reachesFrame({ low, high }: Relative, axis: ForestAxis): boolean {
   return low === null || high === null || low < axis.low || high > axis.high;
 }
 
-function axisLabel(tick: number): string {
+export function percentLabel(tick: number): string {
   return tick === 0 ? "0" : signedPercent(tick).replace(/\.0%$/, "%");
 }
 

@@ -1,18 +1,17 @@
 import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
-import type { InputFile, Reduction } from "../../engine/types.ts";
-import type { Plan } from "../../plan/types.ts";
-import { count, list, planPercent } from "../../words/index.ts";
+import type { Reduction } from "../../engine/types.ts";
+import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
+import { list, planPercent } from "../../words/index.ts";
+import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
+import { type FromWhat, fromWhat } from "./from-what.ts";
+import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
-export interface MethodsSection {
+export interface MethodsSection extends FromWhat {
   readonly methods: readonly Method[];
-  readonly files: readonly FileText[];
-  readonly lists: readonly FileText[];
-  readonly facts: readonly { readonly name: string; readonly value: string }[];
   readonly cautions: readonly string[];
-  readonly planText: string;
 }
 export interface Method {
   /** What a term of the report links to. */
@@ -21,57 +20,32 @@ export interface Method {
   readonly how: string;
   readonly source: string;
 }
-export interface FileText {
-  readonly name: string;
-  readonly rows: string;
-  readonly bytes: string;
-  readonly fingerprint: string;
-}
 
-export function methodsSection({
-  plan,
-  planText,
-  planSha256,
-  version,
-  reduction,
-  effects,
-  choices,
-  conclusion,
-}: ReportInputs): MethodsSection {
+export function methodsSection(inputs: ReportInputs): MethodsSection {
+  const { plan, reduction, effects, choices, conclusion } = inputs;
   return {
     methods: methods(plan, effects, choices, reduction, conclusion.decision !== "undecidable"),
-    files: reduction.inputs.map(fileText),
-    lists: reduction.lists.map(fileText),
-    facts: facts(plan, planSha256, version, reduction),
     cautions: cautions(plan),
-    planText,
+    ...fromWhat({
+      ...inputs,
+      more: [
+        ["Made from", inputs.fromCells === true ? FROM_CELLS : null],
+        ["cells.json, SHA-256", inputs.cellsSha256 ?? null],
+        [REPLACES, inputs.rerun?.previous.sha256 ?? null],
+        ["The rule, kept before the start", registeredText(plan)],
+      ],
+    }),
   };
 }
 
-function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
-  return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
-}
-
-function facts(plan: Plan, planSha256: string, version: string, { engine }: Reduction) {
-  const { owner, link, ended, notes, decided } = plan.texts;
-  const decision =
-    decided === null
-      ? null
-      : [decided.what, decided.by && `by ${decided.by}`, decided.on && `on ${decided.on}`, decided.because]
-          .filter((part) => part !== null && part !== "")
-          .join(", ");
-  const known: readonly (readonly [string, string | null])[] = [
-    ["Plan, SHA-256", planSha256],
-    ["closeout", version],
-    ["Engine", `${engine.name} ${engine.version}`],
-    ["Days and times", plan.timezone],
-    ["Owner", owner],
-    ["Link", link],
-    ["Why it ended", ended],
-    ["Decided", decision],
-    ["Notes", notes],
-  ];
-  return known.flatMap(([name, value]) => (value === null || value === "" ? [] : [{ name, value }]));
+/** Whether the rule is the one that was kept before the start; null where none was. */
+function registeredText(plan: Plan): string | null {
+  if (plan.registered === null) return null;
+  const { on, where, fingerprint } = plan.registered;
+  const kept = `${on}${where === null ? "" : `, ${where}`}: ${fingerprint}`;
+  const own = sealOf(plan).fingerprint;
+  const differ = sealDifference(fingerprint, own);
+  return differ.length === 0 ? `${kept}; unchanged since` : `${kept}; now ${own}, another in: ${list(differ)}`;
 }
 
 /** Only what this report uses. */
@@ -143,11 +117,12 @@ function methods(
       source: "Welch 1947, Biometrika 34, 28-35; Satterthwaite 1946",
     },
     {
-      when: others > 1,
+      when: others > 1 && plan.looks === null,
       name: "Several variants",
       how: `Each variant is compared with the control. For what decides and what must not get worse, the ${others} intervals hold together with ${confidence} confidence: they share the control, and their critical value allows for that. p is adjusted in one step by the same distribution; Holm\u2019s, by several steps, stands beside it and does not decide.${simply ? " Where that distribution is not to be had, the error is shared out evenly over the variants: for quantiles, and where a group has no spread." : ""}`,
       source: `Dunnett 1955, Journal of the American Statistical Association 50, 1096-1121; by Dunnett 1989, Applied Statistics 38, 564-579; Holm 1979, Scandinavian Journal of Statistics 6, 65-70${simply ? "; Dunn 1961, Journal of the American Statistical Association 56, 52-64" : ""}`,
     },
+    ...lookMethods(plan, others, confidence),
     {
       when: primaries > 1 && !anyIsEnough(plan),
       name: "Several deciding measures",
@@ -241,7 +216,7 @@ function cautions(plan: Plan): string[] {
     "Statistical evidence is not the whole decision: cost, law, strategy and the people concerned are not in the figures.",
     "Experiments on people need the consent and the privacy that the law of the place asks for; event logs are personal data.",
     "Not for clinical, safety or other regulated decisions: these need a registered protocol and a licensed practitioner.",
-    "The size of this test was to be fixed beforehand. Looking at the result before the planned end, and stopping when it pleases, makes false results more frequent than stated.",
+    lookCaution(plan),
     secondary.length === 0
       ? "What was not named beforehand as deciding can suggest; it does not decide."
       : `Measures for information suggest, they do not decide: ${list(secondary)}.`,

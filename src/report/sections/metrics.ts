@@ -2,7 +2,7 @@ import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan, Role, Summary } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, percentile, plain, plural, quoted } from "../../words/index.ts";
+import { capital, count, type Interval, list, percentile, plain, plural, quoted } from "../../words/index.ts";
 import {
   bareText,
   effectText,
@@ -109,6 +109,7 @@ const DIFFERENCE_TERM: Readonly<Record<Summary, string>> = {
 
 function familyTerm({ role }: Metric, plan: Plan): string {
   if (role === "secondary") return "method-measures-for-information";
+  if (plan.looks !== null) return "method-planned-looks";
   return plan.variants.length > 2 ? "method-several-variants" : "method-several-deciding-measures";
 }
 
@@ -122,8 +123,12 @@ function adjustedFor(metric: Metric, plan: Plan, effects: readonly Effect[]): st
     return tests > 1 ? `${tests} tests for information` : null;
   }
   const overPrimaries = metric.role === "primary" && anyIsEnough(plan);
-  if (variants > 1) return overPrimaries ? "the variants and deciding measures" : `${variants} variants`;
-  return overPrimaries ? "the deciding measures" : null;
+  const over = [
+    ...(plan.looks === null ? [] : [`${plan.looks.planned.length} looks`]),
+    ...(variants > 1 ? [overPrimaries ? "the variants" : `${variants} variants`] : []),
+    ...(overPrimaries ? [variants > 1 ? "deciding measures" : "the deciding measures"] : []),
+  ];
+  return over.length === 0 ? null : list(over);
 }
 
 function ruleText(metric: Metric): string {
