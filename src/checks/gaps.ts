@@ -18,9 +18,18 @@ const RUNS_NAMED = 3;
 export function gaps(plan: Plan, { facts }: Reduction): Check | null {
   const { sources, silences } = facts.soundness;
   const arms = byArm(plan, sources, silences, facts.enrolled);
+  return check(plan, sources, arms === null ? [] : [arms]);
+}
+
+/** The same without its part by variant. */
+export function gapsTogether(plan: Plan, { facts }: Reduction): Check | null {
+  return check(plan, facts.soundness.sources, []);
+}
+
+function check(plan: Plan, sources: readonly SourceHours[], more: readonly Finding[]): Check | null {
   const found = sources.map((source) => ofSource(plan, source));
   const hours = sum(found.map(({ figures }) => Number(figures.hours)));
-  return asCheck("gaps", [...found, ...(arms === null ? [] : [arms])], { hours });
+  return asCheck("gaps", [...found, ...more], { hours });
 }
 
 function ofSource(plan: Plan, source: SourceHours): Finding {
