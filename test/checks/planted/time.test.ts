@@ -24,7 +24,14 @@ describe("planted visitors not followed to the end", () => {
   const log = (late: number) => {
     const early = [...enrolled("list", 450, 0, 13), ...enrolled("calendar", 450, 0, 13)];
     const end = { visitor: "list 0 0", at: timeText(21 * DAY), event: "booking" };
-    return [...early, ...enrolled("list", late / 2, 14.5, 15.5), ...enrolled("calendar", late / 2, 14.5, 15.5), end];
+    const exactly = [...enrolled("list", 1, 14, 14.00001), ...enrolled("calendar", 1, 14, 14.00001)];
+    return [
+      ...early,
+      ...exactly,
+      ...enrolled("list", late / 2, 14.5, 15.5),
+      ...enrolled("calendar", late / 2, 14.5, 15.5),
+      end,
+    ];
   };
   // METHODS 7: over 10% cautions; 100 of 1,002 is not over, 102 of 1,004 is
   it.each([
