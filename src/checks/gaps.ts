@@ -7,7 +7,7 @@ import { gapsOf, type HourRun, hoursLike, runText } from "./hours.ts";
 import { sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
 import type { Check } from "./types.ts";
-import { byChance, sourceName, units } from "./words.ts";
+import { byChance, entryName, units } from "./words.ts";
 
 const RUNS_NAMED = 3;
 
@@ -33,8 +33,8 @@ function check(plan: Plan, sources: readonly SourceHours[], more: readonly Findi
 }
 
 function ofSource(plan: Plan, source: SourceHours): Finding {
-  const name = plan.log.length === 1 ? "the log" : sourceName(plan, source.source);
-  const about = plan.log.length === 1 ? "hours" : sourceName(plan, source.source);
+  const name = plan.log.length === 1 ? "the log" : entryName(source.source);
+  const about = plan.log.length === 1 ? "hours" : entryName(source.source);
   const runs = gapsOf(source.hours);
   const hours = sum(runs.map(({ first, last }) => last - first + 1));
   const figures = { hours, runs: runs.slice(0, RUNS_NAMED).map((run) => runText(source.hours, run)) };
@@ -97,7 +97,7 @@ function byArm(
   const { silence, source } = worst;
   const variant = plan.variants[silence.variant]?.name ?? "";
   const when = runText(source.hours, silence);
-  const place = plan.log.length === 1 ? "" : ` in ${sourceName(plan, source.source)}`;
+  const place = plan.log.length === 1 ? "" : ` in ${entryName(source.source)}`;
   const others = judged.filter((one) => byP(one.p) !== "pass").length - 1;
   const more =
     others > 0
