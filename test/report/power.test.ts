@@ -89,6 +89,20 @@ describe("p of several questions", () => {
     ]);
   });
 
+  it("counts no test that has no p", () => {
+    const [first, ...rest] = several.effects.filter(({ role }) => role === "secondary");
+    if (first === undefined) throw new Error("no measure for information");
+    const { difference } = first.contrast;
+    const without = {
+      ...first,
+      adjusted: null,
+      contrast: { ...first.contrast, difference: { ...difference, p: null } },
+    };
+    const effects = several.effects.map((effect) => (effect === first ? without : effect));
+    expect(rest).toHaveLength(5);
+    expect(heads({ ...several, effects }).at(-1)).toBe("5 tests for information");
+  });
+
   it("has Holm's beside it for several variants, and none for what is for information", () => {
     const { plan, reduction, effects } = several;
     const sections = metricSections(plan, reduction, effects);

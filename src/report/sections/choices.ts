@@ -6,6 +6,7 @@ import { type ChoiceMark, choiceAxis, choiceStrip } from "../charts/choices.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
 import { choiceText, unchanged } from "../choice-words.ts";
+import { drawnEffects } from "../drawn.ts";
 import { effectText, NONE, type Signed, verdictText } from "../effect-text.ts";
 import { controlOf } from "../plan-words.ts";
 
@@ -37,20 +38,28 @@ export async function choiceFigures(
   choices: readonly Choices[],
 ): Promise<Map<string, ChoicesFigure[]>> {
   const found = new Map<string, ChoicesFigure[]>(plan.metrics.map(({ name }) => [name, []]));
+  const drawn = drawnEffects(effects);
   for (const [i, { metric, variant, rows }] of choices.entries()) {
     const effect = effects.find((one) => one.metric === metric && one.variant === variant);
     if (effect === undefined) throw new Error(`choices for ${metric} and ${variant}, of which there is no effect`);
-    if (rows.length > 1) found.get(metric)?.push(await figure(plan, effect, rows, `choices-${i + 1}`));
+    if (rows.length > 1)
+      found.get(metric)?.push(await figure(plan, effect, rows, `choices-${i + 1}`, drawn.has(effect)));
   }
   return found;
 }
 
-async function figure(plan: Plan, effect: Effect, rows: readonly ChoiceRow[], id: string): Promise<ChoicesFigure> {
+async function figure(
+  plan: Plan,
+  effect: Effect,
+  rows: readonly ChoiceRow[],
+  id: string,
+  isDrawn: boolean,
+): Promise<ChoicesFigure> {
   const metric = metricOf(effect, plan);
   const { scale, marks } = measure(effect, plan);
   const [mark = null] = marks;
   const drawn = rows.map((row) => markOf(row, scale));
-  const known = drawn.filter((one) => one !== null);
+  const known = isDrawn ? drawn.filter((one) => one !== null) : [];
   const axis = choiceAxis(known, mark);
   const planned = known.find(({ isPlanned }) => isPlanned)?.interval.estimate ?? null;
   const tableRows: ChoiceTableRow[] = [];
@@ -69,7 +78,7 @@ async function figure(plan: Plan, effect: Effect, rows: readonly ChoiceRow[], id
   return {
     id,
     title: `${effect.metric}${several ? `, ${effect.variant}` : ""}, under other reasonable choices`,
-    reading: readingText(mark !== null),
+    reading: known.length === 0 ? ONE_AT_A_TIME : readingText(mark !== null),
     plotHead: scaleText(scale, plan),
     rows: tableRows,
     axis:
@@ -159,9 +168,12 @@ function sentences(rows: readonly ChoiceRow[], metric: Metric, plan: Plan): stri
   ];
 }
 
+const ONE_AT_A_TIME = "One choice is changed at a time, all else is as planned.";
+
 function readingText(hasMark: boolean): string {
   return [
-    "One choice is changed at a time, all else is as planned. Filled square: the plan\u2019s own choice; its estimate runs through all rows as a dotted line. Hollow square: another choice. Long upright: no difference.",
+    ONE_AT_A_TIME,
+    "Filled square: the plan\u2019s own choice; its estimate runs through all rows as a dotted line. Hollow square: another choice. Long upright: no difference.",
     ...(hasMark ? ["Short upright: what was asked for, or the limit."] : []),
   ].join(" ");
 }

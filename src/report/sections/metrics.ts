@@ -71,16 +71,18 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       armColumns: armColumns(metric, plan),
       arms: armRows(metric, plan, own),
       effects: own.flatMap((effect) => effectRows(effect, metric, plan)),
-      adjustedFor: adjustedFor(metric, plan),
+      adjustedFor: adjustedFor(metric, plan, effects),
     };
   });
 }
 
 /** The family that a metric's p are adjusted for, where it holds more than one test. */
-function adjustedFor(metric: Metric, plan: Plan): string | null {
+function adjustedFor(metric: Metric, plan: Plan, effects: readonly Effect[]): string | null {
   const variants = plan.variants.length - 1;
   if (metric.role === "secondary") {
-    const tests = variants * plan.metrics.filter(({ role }) => role === "secondary").length;
+    const tests = effects.filter(
+      (effect) => effect.role === "secondary" && deciding(effect).difference.p !== null,
+    ).length;
     return tests > 1 ? `${tests} tests for information` : null;
   }
   const overPrimaries = metric.role === "primary" && anyIsEnough(plan);

@@ -23,6 +23,7 @@ import {
 } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type SamplingRow, sampling } from "../charts/sampling.ts";
+import { drawnEffects } from "../drawn.ts";
 
 /** How near the normal curve one contrast is: the drawn distribution, and what is to be said of the interval. */
 export interface SamplingPart {
@@ -53,6 +54,7 @@ export async function samplingParts(
 ): Promise<Map<string, SamplingPart[]>> {
   const found = new Map<string, SamplingPart[]>(plan.metrics.map(({ name }) => [name, []]));
   const units = analysedUnits(reduction);
+  const drawn = drawnEffects(effects);
   for (const [i, effect] of effects.entries()) {
     if (effect.normality === null && effect.resampled === null) continue;
     const id = `sampling-${i + 1}`;
@@ -61,7 +63,7 @@ export async function samplingParts(
       title: `${capital(effect.variant)} against ${effect.control}: how near the normal curve`,
       sentences: sentences(effect, plan, isDecided ? effects : null),
       notes: [...drawnNotes(effect, plan), ...unitNotes(effect, plan, units)],
-      figure: await figure(effect, plan, id),
+      figure: drawn.has(effect) ? await figure(effect, plan, id) : null,
     });
   }
   return found;
