@@ -17,7 +17,15 @@ import {
   withOrderStatistics,
 } from "./decision/index.ts";
 import { type Progress, type Reduction, type Session, UnusableLog, withReduction } from "./engine/index.ts";
-import { loadPlan, type Plan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import {
+  loadPlan,
+  type Plan,
+  type PlanSource,
+  placeProblems,
+  planAfterwards,
+  planJsonSchema,
+  unreadablePlan,
+} from "./plan/index.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportFiles, type ReportJson, renderReport, reportJsonSchema } from "./report/index.ts";
 import { version } from "./version.ts";
@@ -75,7 +83,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
       return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
     }
-    const rendered = await decisionReport(plan, planText, found);
+    const further = await measuredAfterwards(plan, loaded.source, path.dirname(path.resolve(planPath)), options);
+    const rendered = await decisionReport(plan, planText, found, further);
     options.signal?.throwIfAborted();
     const written = await folder.keep(rendered.files);
     const terminal = rendered.terminal({
@@ -103,6 +112,20 @@ interface Measured {
   readonly pairs: readonly Pair[];
 }
 
+/** The metrics that were asked afterwards, in a second reading; null where there are none. */
+async function measuredAfterwards(
+  plan: Plan,
+  source: PlanSource,
+  folder: string,
+  options: CloseoutOptions,
+): Promise<(Measured & { readonly plan: Plan }) | null> {
+  if (plan.askedAfterwards.metrics.length === 0) return null;
+  const own = planAfterwards(plan);
+  const found = await withReduction(own, source, folder, options, measured);
+  if ("problems" in found) throw new Error("the log has problems that it had not when it was read before");
+  return { ...found, plan: own };
+}
+
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
 async function measured(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
   const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), session.atRanks);
@@ -119,7 +142,12 @@ function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {
 }
 
 /** From counts, cells and arms to the report's files; no file is read or written but the templates. */
-function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }: Measured): Promise<ReportFiles> {
+function decisionReport(
+  plan: Plan,
+  planText: string,
+  { reduction, arms, pairs }: Measured,
+  further: (Measured & { readonly plan: Plan }) | null,
+): Promise<ReportFiles> {
   const effects = allEffects(plan, arms, reduction, pairs);
   const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
   const conclusion = concluded(plan, effects, checks, reduction, arms, pairs);
@@ -127,6 +155,17 @@ function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }
   const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
   const daysSince = daysSinceOf(plan, reduction, effects);
   const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
+  const afterwards = {
+    subgroups: subgroupsOf(plan, reduction, arms, pairs, effects, "afterwards"),
+    metrics:
+      further === null
+        ? null
+        : {
+            plan: further.plan,
+            reduction: further.reduction,
+            effects: allEffects(further.plan, further.arms, further.reduction, further.pairs),
+          },
+  };
   const planSha256 = createHash("sha256").update(planText).digest("hex");
   return renderReport({
     plan,
@@ -140,6 +179,7 @@ function decisionReport(plan: Plan, planText: string, { reduction, arms, pairs }
     accruals,
     daysSince,
     subgroups,
+    afterwards,
     conclusion,
   });
 }

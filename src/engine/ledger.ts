@@ -100,7 +100,7 @@ export function reasonText(reason: number, layout: Layout): string {
   return isRange ? `out of range: ${column}` : `not a number: ${column}`;
 }
 
-type CountedFacts = Omit<Facts, "subgroups">;
+type CountedFacts = Omit<Facts, "subgroups" | "subgroupsAfterwards">;
 
 /** What the checks look at. */
 export async function facts(

@@ -161,7 +161,11 @@ async function stages(
     })),
     lists,
     ...account,
-    facts: { ...found, subgroups: bySubgroup },
+    facts: {
+      ...found,
+      subgroups: bySubgroup.slice(0, plan.subgroups.length),
+      subgroupsAfterwards: bySubgroup.slice(plan.subgroups.length),
+    },
     metrics,
     groups: grouped.map((group, m) => ({ ...group, sinceEnrolment: since[m] ?? null })),
   };

@@ -62,6 +62,8 @@ export interface Facts {
   readonly analysedByDay: readonly { readonly day: number; readonly units: ByVariant }[];
   /** One a subgroup column of the plan, in plan order. */
   readonly subgroups: readonly SubgroupColumn[];
+  /** The same of those that were asked afterwards: no check looks at them. */
+  readonly subgroupsAfterwards: readonly SubgroupColumn[];
 }
 
 /** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */
@@ -111,7 +113,7 @@ export interface MetricGroups {
   readonly metric: string;
   /** By the local day of enrolment, as days since 1970-01-01; null without time. */
   readonly byDay: GroupCells | null;
-  /** One a subgroup column of the plan; the group is the place of the level in `Facts.subgroups`. */
+  /** One a subgroup column, those asked afterwards last; the group is the place of the level in `Facts`. */
   readonly byLevel: readonly GroupCells[];
   /** By day since enrolment; null where a metric cannot be told day by day. */
   readonly sinceEnrolment: SinceEnrolment | null;

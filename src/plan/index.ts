@@ -1,3 +1,5 @@
+/** What was asked afterwards, as a plan of its own. */
+export { planAfterwards } from "./afterwards.ts";
 /** From text to plan. */
 export { type LoadedPlan, loadPlan } from "./load.ts";
 /** Problems: those that only the log can show, and all of them in words. */

@@ -27,6 +27,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     accrual: inputs.accruals.map(accrualJson),
     sinceEnrolment: inputs.daysSince.map(sinceEnrolmentJson),
     sensitivity: inputs.choices.map(sensitivityJson),
+    askedAfterwards: afterwardsJson(inputs),
     changes: null,
     provenance: {
       version: inputs.version,
@@ -37,6 +38,15 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     },
   };
   return twelveDigits(report);
+}
+
+function afterwardsJson({ plan, effects, afterwards }: ReportInputs): ReportJson["askedAfterwards"] {
+  const { subgroups, metrics } = afterwards;
+  if (subgroups.length === 0 && metrics === null) return null;
+  return {
+    effects: (metrics?.effects ?? []).map(effectJson),
+    subgroups: subgroups.map((subgroup) => subgroupJson(subgroup, effects, plan)),
+  };
 }
 
 function flowJson({ plan, reduction }: ReportInputs): FlowJson {

@@ -1,5 +1,6 @@
 import { controlOf, whenText } from "./plan-words.ts";
 import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
+import { type AfterwardsSection, afterwardsSection } from "./sections/afterwards.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
@@ -28,6 +29,7 @@ export interface Page {
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
+  readonly afterwards: AfterwardsSection | null;
   readonly power: PowerSection;
   readonly methods: MethodsSection;
 }
@@ -83,6 +85,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
+    afterwards: await afterwardsSection(inputs),
     power: powerSection(plan, reduction, effects),
     methods: methodsSection(inputs),
   };

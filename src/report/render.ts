@@ -18,6 +18,7 @@ const PARTIALS = [
   "sampling",
   "accrual",
   "subgroups",
+  "afterwards",
   "power",
   "methods",
 ] as const;

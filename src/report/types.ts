@@ -32,6 +32,11 @@ export interface ReportJson {
   readonly accrual: readonly AccrualJson[];
   readonly sinceEnrolment: readonly SinceEnrolmentJson[];
   readonly sensitivity: readonly SensitivityJson[];
+  /** What was asked after the test began; null where nothing was. */
+  readonly askedAfterwards: {
+    readonly effects: readonly EffectJson[];
+    readonly subgroups: readonly SubgroupJson[];
+  } | null;
   readonly changes: null;
   readonly provenance: ProvenanceJson;
 }
@@ -211,7 +216,16 @@ export interface ReportInputs {
   readonly accruals: readonly Accrual[];
   readonly daysSince: readonly DaysSince[];
   readonly subgroups: readonly Subgroup[];
+  readonly afterwards: Afterwards;
   readonly conclusion: Conclusion;
+}
+
+/** What was asked after the test began: it is told apart, and nothing else looks at it. */
+export interface Afterwards {
+  /** The planned metrics by further columns. */
+  readonly subgroups: readonly Subgroup[];
+  /** Further metrics, from a reading of their own; null where none was asked for. */
+  readonly metrics: { readonly plan: Plan; readonly reduction: Reduction; readonly effects: readonly Effect[] } | null;
 }
 
 export interface ReportFiles {

@@ -104,6 +104,7 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       logEndUs: 1_774_220_000_000_000n,
       analysedByDay: [],
       subgroups: [],
+      subgroupsAfterwards: [],
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
     groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),

@@ -52,10 +52,10 @@ export const SHAPE: readonly WrongPlan[] = [
       ],
     ],
   },
-  ...["looks", "incidents", "registered", "asked-afterwards", "engine"].map((key): WrongPlan => {
+  ...["looks", "incidents", "registered", "engine"].map((key): WrongPlan => {
     const known =
       "experiment, question, unit-called, log, timezone, enrolment, variants, ended, follow-up, metrics, filters, " +
-      "subgroups, decision, planned, forecast, owner, link, limits, notes, decided";
+      "subgroups, asked-afterwards, decision, planned, forecast, owner, link, limits, notes, decided";
     return {
       title: `${key}, which a later version knows`,
       plan: { x: `«${key}»: {}` },
