@@ -3,6 +3,7 @@ import { join } from "node:path";
 import { planFromYaml } from "../plan.ts";
 import { clockOf } from "../time.ts";
 import type { Lists, RawFile } from "../types.ts";
+import { withDays } from "./days.ts";
 import { type Dice, diceOf } from "./dice.ts";
 import { drawLog, type RandomSource } from "./log.ts";
 import { drawPlan, type RandomList, reordered } from "./plan.ts";
@@ -25,8 +26,9 @@ export function randomCase(seed: number): RandomCase {
   const dice = diceOf(seed);
   // Dice of their own, so that the other draws of a seed stay what they were.
   const few = drawShape(dice);
-  const { plan: plain, shape } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
-  const drawn = withSubgroups(diceOf(seed + 4_000_000), plain, few);
+  const { plan: plain, shape: many } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
+  const divided = withSubgroups(diceOf(seed + 4_000_000), plain, few);
+  const { plan: drawn, shape } = withDays(diceOf(seed + 5_000_000), divided, many);
   const logFirst = dice.chance(0.5);
   const columns = shape.sources.map(({ names }) => columnsPiece(dice, names));
   const plan = (patterns: readonly string[]) => {
