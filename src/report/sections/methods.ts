@@ -1,8 +1,9 @@
-import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
+import { anyIsEnough, type Effect } from "../../decision/index.ts";
 import type { InputFile, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { count, list, planPercent } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
+import { groupMethods } from "./group-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
@@ -21,17 +22,10 @@ export interface FileText {
   readonly fingerprint: string;
 }
 
-export function methodsSection({
-  plan,
-  planText,
-  planSha256,
-  version,
-  reduction,
-  effects,
-  choices,
-}: ReportInputs): MethodsSection {
+export function methodsSection(inputs: ReportInputs): MethodsSection {
+  const { plan, planText, planSha256, version, reduction } = inputs;
   return {
-    methods: methods(plan, effects, choices),
+    methods: methods(inputs),
     files: reduction.inputs.map(fileText),
     lists: reduction.lists.map(fileText),
     facts: facts(plan, planSha256, version, reduction),
@@ -67,7 +61,8 @@ function facts(plan: Plan, planSha256: string, version: string, { engine }: Redu
 }
 
 /** Only what this report uses. */
-function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choices[]): MethodsSection["methods"] {
+function methods(inputs: ReportInputs): MethodsSection["methods"] {
+  const { plan, effects, choices } = inputs;
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -167,6 +162,7 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
         "Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 3.2; what is overstated: Gelman and Carlin 2014, Perspectives on Psychological Science 9, 641-651",
     },
     ...normalityMethods(plan, effects),
+    ...groupMethods(plan, inputs),
     {
       when: choices.some(({ rows }) => rows.length > 1),
       name: "Other reasonable choices",
