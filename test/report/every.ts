@@ -2,6 +2,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
+import { grouped } from "./groups.ts";
 import { hostile } from "./hostile.ts";
 import { quantiles } from "./quantiles.ts";
 
@@ -16,5 +17,6 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["far from normal", farFromNormal],
   ["adjusted", adjustedCase],
   ["quantiles", quantiles],
+  ["days and levels", grouped],
   ["hostile", hostile],
 ];

@@ -1,5 +1,5 @@
 import type { ReportInputs } from "../../src/report/types.ts";
-import { adopt } from "./cases.ts";
+import { grouped } from "./groups.ts";
 
 /** Text that would do harm if any of it reached the page, the style, a template or the terminal as it stands. */
 const POISON = [
@@ -27,14 +27,15 @@ const KEPT_MORE = new Set([
   "result",
   "method",
   "absent",
+  "standing",
   "planSha256",
   "sha256",
   "timezone",
 ]);
 const KEPT_VALUES = new Set(["value", "q", "at"]);
 
-/** The case "adopt" with poison in every name and text that comes from a plan, a log or a check. */
-export const hostile: ReportInputs = poisoned(adopt, "") as ReportInputs;
+/** The cases "adopt" and "days and levels" with poison in every name and text that comes from a plan, a log or a check. */
+export const hostile: ReportInputs = poisoned(grouped, "") as ReportInputs;
 
 function poisoned(value: unknown, key: string): unknown {
   if (typeof value === "string") return KEPT_FIELDS.has(key) && key !== "id" ? value : text(value, key);

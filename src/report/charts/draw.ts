@@ -1,5 +1,6 @@
 import { parse, resetSVGDefIds, View } from "vega";
 import { compile, type TopLevelSpec } from "vega-lite";
+import { withoutControls } from "../typeset.ts";
 
 /** An SVG element of our own making: the only text that the page takes as it is. */
 export interface Drawing {
@@ -23,7 +24,8 @@ export async function draw(spec: TopLevelSpec, id: string, text: DrawingText | n
   const inside = /^<svg [^>]*viewBox="([^"]*)"[^>]*>(.*)<\/svg>$/s.exec(svg);
   const [, viewBox, content] = inside ?? [];
   if (viewBox === undefined || content === undefined) throw new Error(`the drawing ${id} is not one svg element`);
-  const own = shorten(withPrefix(withoutLabels(content), id));
+  // A name of the plan may stand at an axis or in the description.
+  const own = withoutControls(shorten(withPrefix(withoutLabels(content), id)));
   if (text === null) {
     return { svg: `<svg viewBox="${viewBox}" aria-hidden="true" focusable="false">${own}</svg>` };
   }
@@ -66,5 +68,5 @@ function shorten(content: string): string {
 }
 
 function escaped(text: string): string {
-  return text.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
+  return withoutControls(text).replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
 }
