@@ -12,6 +12,7 @@ import { type PowerSection, powerSection } from "./sections/power.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
+import { untoldOfTime } from "./sections/weekdays.ts";
 import type { ReportInputs } from "./types.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
@@ -28,6 +29,8 @@ export interface Page {
   readonly decision: DecisionSection;
   readonly checks: ChecksSection;
   readonly counted: CountedSection;
+  /** What of time cannot be told. */
+  readonly untold: readonly string[];
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly afterwards: AfterwardsSection | null;
   readonly power: PowerSection;
@@ -75,6 +78,7 @@ export async function page(inputs: ReportInputs): Promise<Page> {
     decision: await decisionSection(inputs),
     checks: checksSection(checks),
     counted: countedSection(plan, reduction),
+    untold: untoldOfTime(plan),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
       sampling: sampling.get(metric.name) ?? [],

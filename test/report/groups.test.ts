@@ -82,6 +82,20 @@ describe("the effect by day since enrolment", () => {
   });
 });
 
+describe("what of time cannot be told", () => {
+  it("is said: without times neither, without a follow-up of two days not by day since enrolment", async () => {
+    const untold = async (plan: typeof adopt.plan) => (await page({ ...adopt, plan })).untold;
+    const columns = { unit: "visitor", time: null, event: null, variant: "arm", eventId: null };
+    expect(await untold({ ...adopt.plan, log: [{ files: ["a.csv"], columns }] })).toEqual([
+      "The log has no times: how the differences came about as visitors enrolled, and by day since enrolment, is not told.",
+    ]);
+    const without = "Differences by day since enrolment are not told: the plan has no follow-up of two days or more.";
+    expect(await untold({ ...adopt.plan, followUp: null })).toEqual([without]);
+    expect(await untold({ ...adopt.plan, followUp: { days: 1.5, incomplete: "keep" } })).toEqual([without]);
+    expect(await untold(adopt.plan)).toEqual([]);
+  });
+});
+
 describe("the effect by subgroup", () => {
   it("has a sentence for every level, and tells a value named other from the rest and from none", async () => {
     const part = (await metricOf("Booked"))?.subgroups[0];
