@@ -100,7 +100,9 @@ async function measuredOf(
   { threads, memory, signal }: ReduceOptions,
 ): Promise<Measured | null> {
   try {
-    const found = await measure(plan, source, folder, { threads, memory, signal });
+    // What was asked afterwards moves nothing of the plan's own: no step needs its reading.
+    const own = { ...plan, askedAfterwards: { ...plan.askedAfterwards, metrics: [] } };
+    const found = await measure(own, source, folder, { threads, memory, signal });
     return "problems" in found ? null : found;
   } catch (error) {
     if (error instanceof UnusableLog && signal?.aborted !== true) return null;

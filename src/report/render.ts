@@ -31,6 +31,7 @@ const PARTIALS = [
   "sampling",
   "accrual",
   "subgroups",
+  "afterwards",
   "power",
   "methods",
   "from-what",

@@ -1,10 +1,11 @@
-import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
-import type { Reduction } from "../../engine/types.ts";
+import { anyIsEnough, type Effect } from "../../decision/index.ts";
+
 import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
 import { list, planPercent } from "../../words/index.ts";
 import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
 import { type FromWhat, fromWhat } from "./from-what.ts";
+import { groupMethods } from "./group-methods.ts";
 import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
@@ -22,9 +23,9 @@ export interface Method {
 }
 
 export function methodsSection(inputs: ReportInputs): MethodsSection {
-  const { plan, reduction, effects, choices } = inputs;
+  const { plan } = inputs;
   return {
-    methods: methods(plan, effects, choices, reduction),
+    methods: methods(inputs),
     cautions: cautions(plan),
     ...fromWhat({
       ...inputs,
@@ -49,12 +50,8 @@ function registeredText(plan: Plan): string | null {
 }
 
 /** Only what this report uses. */
-function methods(
-  plan: Plan,
-  effects: readonly Effect[],
-  choices: readonly Choices[],
-  reduction: Reduction,
-): MethodsSection["methods"] {
+function methods(inputs: ReportInputs): MethodsSection["methods"] {
+  const { plan, effects, choices, reduction } = inputs;
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -155,6 +152,7 @@ function methods(
         "Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 3.2; what is overstated: Gelman and Carlin 2014, Perspectives on Psychological Science 9, 641-651",
     },
     ...normalityMethods(plan, effects),
+    ...groupMethods(plan, inputs),
     {
       when: choices.some(({ rows }) => rows.length > 1),
       name: "Other reasonable choices",
