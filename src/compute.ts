@@ -1,6 +1,12 @@
 import { createHash } from "node:crypto";
 import { type Check, planChanged } from "./checks/index.ts";
-import { otherChoices } from "./decision/index.ts";
+import {
+  accruals as accrualsOf,
+  atThisLook,
+  daysSince as daysSinceOf,
+  otherChoices,
+  subgroups as subgroupsOf,
+} from "./decision/index.ts";
 import type { Judged } from "./judge.ts";
 import { cellsFile, cellsText } from "./kept/file.ts";
 import type { Measured } from "./measure.ts";
@@ -13,7 +19,7 @@ import { version } from "./version.ts";
  * @param fromCells whether the figures are of cells that were kept, and the log was not read
  */
 export async function decisionReport(
-  plan: Plan,
+  planned: Plan,
   planText: string,
   measured: Measured,
   found: Judged,
@@ -22,7 +28,11 @@ export async function decisionReport(
 ): Promise<ReportFiles> {
   const { reduction, arms, pairs } = measured;
   const { effects, conclusion } = found;
+  const plan = atThisLook(planned, reduction);
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
+  const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
+  const daysSince = daysSinceOf(plan, reduction, effects);
+  const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
   const kept = cellsText(cellsFile(plan, planText, measured, found, rerun?.steps ?? null));
   const rendered = await renderReport({
     plan,
@@ -33,6 +43,9 @@ export async function decisionReport(
     checks: [...planCheck(plan, planText, rerun), ...found.checks],
     effects,
     choices,
+    accruals,
+    daysSince,
+    subgroups,
     conclusion,
     fromCells,
     cellsSha256: sha256(kept),

@@ -8,14 +8,22 @@ import { judged } from "./judge.ts";
 import { measuredFromFile } from "./kept/from-file.ts";
 import { measure } from "./measure.ts";
 import { loadPlan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportJson, reportJsonSchema } from "./report/index.ts";
 import { replacedReport } from "./rerun.ts";
 import { rerunOf } from "./steps.ts";
 import { version } from "./version.ts";
 
+// before the end: plan, log and soundness without any result
+export { type CheckOutcome, check } from "./check.ts";
 export { type Compared, compareReports } from "./compare.ts";
+export type { SizeAnswer, SizeQuestion } from "./decision/index.ts";
+export { type BlindJson, blindJsonSchema } from "./report/check/index.ts";
 export { type Sealed, seal } from "./seal.ts";
+export { size } from "./size.ts";
+// one unit, row by row
+export { type TraceOptions, type TraceOutcome, trace } from "./trace.ts";
 export { type Verified, type VerifyOptions, verify } from "./verify/verify.ts";
 export type { Progress, ReportJson };
 export { planJsonSchema, reportJsonSchema, version };
@@ -28,6 +36,8 @@ export interface CloseoutOptions {
   /** The cells.json of an earlier report: its figures are taken, and the log is not read. */
   readonly fromCells?: string | undefined;
   readonly threads?: number | undefined;
+  /** Writes figures/*.svg, page-one.html and decision.csv too. */
+  readonly figures?: boolean | undefined;
   /** As DuckDB writes sizes: "2GB". */
   readonly memory?: string | undefined;
   readonly progress?: ((progress: Progress) => void) | undefined;
@@ -90,7 +100,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
     const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
     const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
     options.signal?.throwIfAborted();
-    const written = await folder.keep(rendered.files, replaced.history);
+    const kept = await folder.keep(rendered.files, replaced.history);
+    const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
     const terminal = rendered.terminal({
       report: path.join(folder.shown, "report.html"),
       summary: path.join(folder.shown, "summary.md"),

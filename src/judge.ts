@@ -1,6 +1,7 @@
 import { type Check, checks as soundnessChecks } from "./checks/index.ts";
 import {
   effects as allEffects,
+  atThisLook,
   type Conclusion,
   conclusion as concluded,
   contrastFigures,
@@ -16,7 +17,8 @@ export interface Judged {
   readonly conclusion: Conclusion;
 }
 
-export function judged(plan: Plan, { reduction, arms, pairs }: Measured): Judged {
+export function judged(planned: Plan, { reduction, arms, pairs }: Measured): Judged {
+  const plan = atThisLook(planned, reduction);
   const effects = allEffects(plan, arms, reduction, pairs);
   const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
   return { effects, checks, conclusion: concluded(plan, effects, checks, reduction, arms, pairs) };

@@ -1,5 +1,5 @@
 import { type Arm, arms } from "./cells/index.ts";
-import { adjustedPairs, type Pair, withOrderStatistics } from "./decision/index.ts";
+import { adjustedPairs, atThisLook, type Pair, withOrderStatistics } from "./decision/index.ts";
 import {
   type AdjustedRequest,
   type ReduceOptions,
@@ -41,7 +41,8 @@ export function measure(
 }
 
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
-export async function whileOpen(plan: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+export async function whileOpen(planned: Plan, reduction: Reduction, session: Session): Promise<Measured> {
+  const plan = atThisLook(planned, reduction);
   const answers: { adjusted: Answers["adjusted"][number][]; ranks: Answers["ranks"][number][] } = {
     adjusted: [],
     ranks: [],
@@ -79,7 +80,7 @@ export function measuredBy(plan: Plan): string {
   const hasQuantile = plan.metrics.some(({ summary }) => summary === "quantile");
   const { texts: _texts, plannedUnits: _units, forecast: _forecast, registered: _registered, decision, ...rest } = plan;
   const metrics = plan.metrics.map(({ worthwhile: _w, expected: _e, margin: _m, goodIs: _g, ...metric }) => metric);
-  // which ranks of a quantile are asked for hangs on the confidence
-  const asked = hasQuantile ? decision : null;
+  // which ranks of a quantile are asked for hangs on the confidence, which a look narrows by how far it reaches
+  const asked = hasQuantile ? [decision, plan.plannedUnits] : null;
   return JSON.stringify({ ...rest, metrics, asked }, (_, value) => (typeof value === "bigint" ? String(value) : value));
 }

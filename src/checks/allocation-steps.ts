@@ -1,40 +1,40 @@
 import type { ByVariant, Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { pearson } from "../stats/index.ts";
-import { count, list, quoted } from "../words/index.ts";
+import { count, list } from "../words/index.ts";
+import { lineInWords, looksPast, removedBy, rowSteps, type Step, stepRemedy, unitSteps } from "./flow.ts";
 import { sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
 import { plannedShares } from "./planned-shares.ts";
-import { groups } from "./words.ts";
-
-/** The line of the ledger at which a planned split was lost. */
-export interface Step {
-  readonly line: string;
-  readonly before: ByVariant;
-  readonly removed: ByVariant;
-}
+import { groups, perVariant } from "./words.ts";
 
 /**
- * Walks the lines on which enrolled units end, and finds the first after which the split is as bad as it is at the end.
- * Null where the split was that bad at enrolment already: then no line broke it.
+ * The step at which a planned split was lost. The first after which the split is as bad as it is at the end ends the
+ * search; of the steps up to it, the one that moved the split most is named. Null where it was that bad from the start.
  */
-export function brokenAt(plan: Plan, reduction: Reduction, atTheEnd: "caution" | "fail"): Step | null {
-  let left = reduction.facts.enrolled;
-  if (asBad(plan, left, atTheEnd)) return null;
-  for (const { id, byVariant } of linesAfterEnrolment(reduction)) {
-    const after = left.map((units, i) => units - (byVariant[i] ?? 0));
-    if (asBad(plan, after, atTheEnd)) return { line: id, before: left, removed: byVariant };
-    left = after;
-  }
-  return null;
+export function brokenAt(plan: Plan, steps: readonly Step[], atTheEnd: "caution" | "fail"): Step | null {
+  const [first] = steps;
+  if (first === undefined || asBad(plan, first.before, atTheEnd)) return null;
+  const end = steps.findIndex(({ after }) => asBad(plan, after, atTheEnd));
+  const moved = (step: Step) => distance(plan, step.after) - distance(plan, step.before);
+  const [worst = null] = steps.slice(0, end + 1).toSorted((a, b) => moved(b) - moved(a));
+  return worst;
 }
 
-function linesAfterEnrolment(reduction: Reduction): { id: string; byVariant: ByVariant }[] {
-  const ids = reduction.unitLines.map((line) => line.id);
-  return reduction.unitLines
-    .slice(ids.indexOf("unknown-variant") + 1, ids.indexOf("analysed"))
-    .flatMap(({ id, byVariant }) => (byVariant === null ? [] : [{ id, byVariant }]));
+/** From the rows as read to those enrolled, and on to those analysed. */
+export const stepsToEnrolled = (reduction: Reduction): Step[] => rowSteps(reduction);
+export const stepsToAnalysed = (reduction: Reduction): Step[] => [...rowSteps(reduction), ...unitSteps(reduction)];
+
+/** The groups after each step, for the reader who looks for the fault. */
+export function stepFigures(plan: Plan, steps: readonly Step[]) {
+  return steps.map(({ line, after }) => ({
+    after: line,
+    counts: perVariant(plan, after),
+    ...(sum(after) === 0 ? {} : { p: pearson(after, plannedShares(plan)).p }),
+  }));
 }
+
+const distance = (plan: Plan, counts: ByVariant) => pearson(counts, plannedShares(plan)).chiSquare;
 
 function asBad(plan: Plan, counts: ByVariant, outcome: "caution" | "fail"): boolean {
   if (sum(counts) === 0) return false;
@@ -42,36 +42,18 @@ function asBad(plan: Plan, counts: ByVariant, outcome: "caution" | "fail"): bool
   return found === "fail" || found === outcome;
 }
 
-export function brokenSentence(plan: Plan, { line, before, removed }: Step): string {
+export function brokenSentence(plan: Plan, step: Step): string {
+  const { line, takes, before, after } = step;
   const where = `Where it broke: before ${lineInWords(plan, line)} the groups were ${groups(plan, before)}`;
-  const what = `that removed ${list(removed.map(count))}.`;
+  if (takes === "rows") return `${where}, after it ${list(after.map(count))}.`;
+  const what = `that removed ${list(removedBy(step).map(count))}.`;
   return looksPast(plan, line)
     ? `${where}; ${what} It looks past enrolment, so the variant can change who is removed.`
     : `${where}; ${what}`;
 }
 
 export function brokenRemedy(plan: Plan, step: Step | null): string {
-  const { many } = plan.unitCalled;
-  if (step === null) return "Mend what makes the groups uneven at enrolment, and run the report again.";
-  if (looksPast(plan, step.line)) {
-    return `Judge ${lineInWords(plan, step.line)} by what was known at enrolment (when: at-enrolment), and run the report again.`;
-  }
-  if (step.line === "switched") {
-    return `Find out how ${many} come to see two variants; count them where they were first enrolled (in-two-variants: first), and run the report again.`;
-  }
-  return `Find out why ${lineInWords(plan, step.line)} removes more ${many} of one group than of the other; mend it, and run the report again.`;
-}
-
-function lineInWords(plan: Plan, line: string): string {
-  const { many } = plan.unitCalled;
-  if (line.startsWith("filter:")) return `the filter ${quoted(line.slice("filter:".length))}`;
-  if (line === "switched") return `the rule that leaves out ${many} seen in two variants`;
-  return `the rule that leaves out ${many} not followed to the end`;
-}
-
-function looksPast(plan: Plan, line: string): boolean {
-  return plan.filters.some(
-    (filter) =>
-      line === `filter:${filter.name}` && filter.drop === "units" && "when" in filter && filter.when === "ever",
-  );
+  return step === null
+    ? "Mend what makes the groups uneven at enrolment, and run the report again."
+    : stepRemedy(plan, step);
 }

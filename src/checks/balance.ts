@@ -31,7 +31,7 @@ export function balance(plan: Plan, reduction: Reduction): Check | null {
   return asCheck("balance", findings, {});
 }
 
-interface Covariate {
+export interface Covariate {
   readonly about: string;
   /** Whether it is a 0 or 1 of each unit: a proportion's own past. */
   readonly isShare: boolean;
@@ -48,7 +48,7 @@ interface Comparison {
 }
 
 /** Each once, though several metrics adjust for it: over the most units that have a value. */
-function covariates(plan: Plan, { metrics }: Reduction): Covariate[] {
+export function covariates(plan: Plan, { metrics }: Reduction): Covariate[] {
   const found = new Map<string, Covariate>();
   for (const [m, metric] of plan.metrics.entries()) {
     const cells = metrics[m];

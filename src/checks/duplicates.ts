@@ -17,6 +17,15 @@ export function duplicates(plan: Plan, reduction: Reduction): Check | null {
   return asCheck("duplicates", findings, { ...rows.figures, copiesThatDiffer, copiesOfOtherUnits });
 }
 
+/** The same for all variants together, before the end: a variant that makes people do more has more rows to come twice. */
+export function duplicatesTogether(plan: Plan, reduction: Reduction): Check | null {
+  if (!reduction.facts.hasEventId || reduction.rowsRead === 0) return null;
+  const rows = ofRows(reduction);
+  const findings = [rows, copies(plan, reduction)].filter((finding) => finding !== null);
+  const { copiesThatDiffer, copiesOfOtherUnits } = reduction.facts;
+  return asCheck("duplicates", findings, { ...rows.figures, copiesThatDiffer, copiesOfOtherUnits });
+}
+
 function ofRows(reduction: Reduction): Finding {
   const rows = rowsOn(reduction, "duplicate");
   const share = rows / reduction.rowsRead;

@@ -23,6 +23,7 @@ export function asCheck(id: string, findings: readonly Finding[], figures: Check
       result: part.result,
       sentence: part.sentence,
       figures: part.figures,
+      remedy: part.remedy,
     })),
   };
 }

@@ -11,6 +11,9 @@ const WORSE_OVER = 0.01;
 /** Share of units not followed to the end, over which the follow-up draws a caution (METHODS 7). */
 export const FOLLOW_UP_CAUTION_OVER = 0.1;
 
+/** Share of the enrolled whose enrolling row a metric counts, over which that draws a caution (METHODS 7). */
+export const ENROLLED_BY_METRIC_ROWS_OVER = 0.01;
+
 /** What a p-value of "the arms are alike" says. */
 export function byP(p: number): CheckOutcome {
   return p < FAILS_BELOW ? "fail" : p < CAUTION_BELOW ? "caution" : "pass";

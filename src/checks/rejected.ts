@@ -23,7 +23,14 @@ export function rejected(plan: Plan, reduction: Reduction): Check | null {
   return asCheck("rejected", [whole, ...(arms === null ? [] : [arms])], whole.figures);
 }
 
-function ofRows(reduction: Reduction): Finding {
+/** The same for all variants together, before the end: a variant that makes people do more has more rows to be rejected. */
+export function rejectedTogether(_plan: Plan, reduction: Reduction): Check | null {
+  if (reduction.rowsRead === 0) return null;
+  const whole = ofRows(reduction, "check-rejects.csv");
+  return asCheck("rejected", [whole], whole.figures);
+}
+
+function ofRows(reduction: Reduction, listedIn = "rejects.csv"): Finding {
   const rows = rowsOn(reduction, "rejected");
   const share = rows / reduction.rowsRead;
   const figures = { rows, share };
@@ -35,8 +42,7 @@ function ofRows(reduction: Reduction): Finding {
   const sentence = `${plural(rows, "row", "rows")} of ${count(reduction.rowsRead)} (${percent(share)}) could not be used${why}.`;
   const result = OUTCOME[byShare(share)];
   if (result === "pass") return passed("rows", sentence, figures);
-  const remedy =
-    "Look at the rejected rows, each with file, line and reason, in rejects.csv; mend what wrote them, and run the report again.";
+  const remedy = `Look at the rejected rows, each with file, line and reason, in ${listedIn}; mend what wrote them, and run this again.`;
   return { about: "rows", result, strong: false, sentence, remedy, figures };
 }
 

@@ -17,6 +17,14 @@ export function switched(plan: Plan, reduction: Reduction): Check | null {
   return asCheck("switched", [whole, ...(arms === null ? [] : [arms])], whole.figures);
 }
 
+/** The same for all variants together, before the end: who does more has more chances to be seen in two. */
+export function switchedTogether(plan: Plan, reduction: Reduction): Check | null {
+  const enrolled = sum(reduction.facts.enrolled);
+  if (enrolled === 0) return null;
+  const whole = ofUnits(plan, sum(reduction.facts.switched), enrolled);
+  return asCheck("switched", [whole], whole.figures);
+}
+
 function ofUnits(plan: Plan, n: number, enrolled: number): Finding {
   const share = n / enrolled;
   const figures = { units: n, share };

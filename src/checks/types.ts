@@ -22,6 +22,8 @@ export interface CheckPart {
   readonly result: CheckOutcome;
   readonly sentence: string;
   readonly figures: { readonly [name: string]: Figure };
+  /** What to do about this part; of a check's worst part it is the check's own. Not in report.json. */
+  readonly remedy?: string;
 }
 
 /** What the checks look at of the contrast that decides of one metric and variant: whoever compared the arms hands it over. */

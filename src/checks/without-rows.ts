@@ -22,13 +22,42 @@ export function withoutRows(plan: Plan, reduction: Reduction): Check | null {
   return asCheck("without-rows", findings, {});
 }
 
+/** The same for all variants together, before the end: who has a value is an outcome. */
+export function withoutRowsTogether(plan: Plan, reduction: Reduction): Check | null {
+  const counted = sum(analysedUnits(reduction));
+  if (counted === 0) return null;
+  const findings = plan.metrics.flatMap((metric, i): Finding[] => {
+    const leftOut = reduction.metrics[i]?.leftOut;
+    if (metric.withoutRows !== "leave-out" || leftOut === undefined) return [];
+    const share = sum(leftOut) / counted;
+    return [
+      {
+        about: metric.name,
+        result: "caution",
+        strong: false,
+        sentence: `${leftOutSentence(plan, metric, sum(leftOut), counted)}.`,
+        remedy: onlyWithValue(plan, metric),
+        figures: { units: sum(leftOut), share },
+      },
+    ];
+  });
+  return asCheck("without-rows", findings, {});
+}
+
+function leftOutSentence(plan: Plan, metric: Metric, n: number, counted: number): string {
+  return `${metric.name}: ${units(plan, n)} of ${count(counted)} (${percent(n / counted)}) without a value ${n === 1 ? "is" : "are"} left out`;
+}
+
+function onlyWithValue({ unitCalled }: Plan, { name }: Metric): string {
+  return `Read ${name} as a statement about ${unitCalled.many} with a value only: the variant may change who has one.`;
+}
+
 function judge(plan: Plan, metric: Metric, leftOut: ByVariant, analysed: ByVariant): Finding {
   const n = sum(leftOut);
   const share = n / sum(analysed);
   const p = armsAlike(leftOut, analysed);
   const differ = p === null ? "pass" : byP(p);
-  const { many } = plan.unitCalled;
-  const left = `${metric.name}: ${units(plan, n)} of ${count(sum(analysed))} (${percent(share)}) without a value ${n === 1 ? "is" : "are"} left out`;
+  const left = leftOutSentence(plan, metric, n, sum(analysed));
   const byVariant = n === 0 ? "" : `: ${groupShares(plan, leftOut, analysed)}`;
   const chance = p === null || differ === "pass" ? "" : ` ${ofDifference(p)}`;
   return {
@@ -38,7 +67,7 @@ function judge(plan: Plan, metric: Metric, leftOut: ByVariant, analysed: ByVaria
     sentence: `${left}${byVariant}.${chance}`,
     remedy:
       differ === "pass"
-        ? `Read ${metric.name} as a statement about ${many} with a value only: the variant may change who has one.`
+        ? onlyWithValue(plan, metric)
         : `The variant changes who has a value, so those compared are no longer alike. Choose a metric that counts every ${plan.unitCalled.one} (without-rows: 0), or find out why values are missing.`,
     figures: { units: perVariant(plan, leftOut), share, ...(p === null ? {} : { p }) },
   };

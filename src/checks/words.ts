@@ -42,3 +42,9 @@ export function ofDifference(p: number): string {
 export function perVariant(plan: Plan, counts: ByVariant): Record<string, number> {
   return Object.fromEntries(plan.variants.map((variant, i) => [variant.name, counts[i] ?? 0]));
 }
+
+/** An entry of the log by its files, where a plan has several: "data/bookings.csv"; of several patterns the first. */
+export function sourceName(plan: Plan, source: number): string {
+  const [first = "", ...others] = plan.log[source]?.files ?? [];
+  return `${quoted(first)}${others.length === 0 ? "" : " and others"}`;
+}

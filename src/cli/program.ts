@@ -1,11 +1,14 @@
 import { Command, CommanderError } from "commander";
+import { check } from "./check.ts";
 import { compare } from "./compare.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
 import { type ReportArguments, report } from "./report.ts";
 import { schema } from "./schema.ts";
 import { seal } from "./seal.ts";
+import { addSize } from "./size.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
+import { trace } from "./trace.ts";
 import { unwritableText } from "./unwritable.ts";
 import { type CommandFacts, UsageError, unknownCommand, unknownOption, wrongArguments } from "./usage.ts";
 import { verify } from "./verify.ts";
@@ -73,6 +76,10 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
     .option("--previous <REPORT>", "the report.json to compare with, or none (default: the one in the report's folder)")
     .option(
+      "--figures",
+      "also write each figure as SVG, page one alone, and decision.csv, a line for a log of decisions",
+    )
+    .option(
       "--from-cells <FILE>",
       "take the figures of an earlier report's cells.json, to see another confidence or limit",
     )
@@ -137,6 +144,40 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .action(async (plan: string) => end(await seal(plan, terminal, await load())));
 
   program
+    .command("check")
+    .summary("look at plan and log before the end, blind: no result")
+    .description(
+      "Reads plan and log while a test runs, or before its result is looked at, and writes check.html and check.json: the rule in words, how far the test is, who was counted, and whether the data can be trusted. Nothing by variant that could show an effect.",
+    )
+    .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
+    .usage("PLAN [options]")
+    .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string, options: RawOptions) => {
+      const read = readOptions(options, facts(program, "check"));
+      end(await check({ plan, options: read }, terminal, await load(), signal));
+    });
+
+  program
+    .command("trace")
+    .summary("follow one unit's rows through the ledger, on the terminal")
+    .description(
+      "Reads plan and log as the report does, and prints what became of one unit and each of its rows, in order of time: the line of the ledger on which each ended, and by which measures it is counted. No file is written, since ids are personal data.",
+    )
+    .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
+    .usage("PLAN --unit ID [options]")
+    .requiredOption("--unit <ID>", "the id, as the log has it")
+    .option("--threads <N>", "how many processor cores to use (default: all)")
+    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
+    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .action(async (plan: string, options: RawOptions & { readonly unit: string }) => {
+      const { out: _none, ...read } = readOptions(options, facts(program, "trace"));
+      end(await trace({ plan, unit: options.unit, options: read }, terminal, await load(), signal));
+    });
+
+  program
     .command("demo")
     .summary("try it: an invented test with its log, plan and report")
     .description(
@@ -147,15 +188,17 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .option("--debug", "on a fault of closeout itself, print where it happened")
     .action(async (folder: string) => end(await demo(folder, terminal, await load(), signal)));
 
+  addSize(program, () => facts(program, "size"), terminal, load, end);
+
   program
     .command("schema")
-    .summary("print the JSON Schema of the plan or of report.json")
+    .summary("print the JSON Schema of the plan, of report.json or of check.json")
     .description("Prints a JSON Schema. With the plan's, an editor completes and checks a plan while you write it.")
-    .argument("[OF]", "plan, or report for report.json", "plan")
-    .usage("[plan|report]")
+    .argument("[OF]", "plan, report for report.json, or check for check.json", "plan")
+    .usage("[plan|report|check]")
     .option("--debug", "on a fault of closeout itself, print where it happened")
     .action(async (of: string) => {
-      if (of !== "plan" && of !== "report") {
+      if (of !== "plan" && of !== "report" && of !== "check") {
         throw wrongArguments(`There is no schema of "${of}".`, facts(program, "schema"));
       }
       end(schema(of, terminal, await load()));
@@ -166,11 +209,12 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
 const AFTER_HELP = `
 Examples:
   closeout demo              an invented test in out/demo, to look around
+  closeout check plan.yaml   while the test runs: log and dates, no result
   closeout report plan.yaml  its report in out/ and the experiment's name
 
 Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments
-are wrong, or a file or column that they name is not there; 3 the log cannot be
-used; 4 verify: the report does not hold; 1 a fault of closeout itself.`;
+are wrong, or a file, column or unit that they name is not there; 3 the log cannot
+be used; 4 verify: the report does not hold; 1 a fault of closeout itself.`;
 
 interface RawOptions {
   readonly out?: string;
@@ -180,6 +224,7 @@ interface RawOptions {
   readonly fromCells?: string;
   readonly threads?: string;
   readonly memory?: string;
+  readonly figures?: boolean;
 }
 
 function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["options"] {
@@ -198,6 +243,7 @@ function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["o
     ...(raw.previous === undefined ? {} : { previous: raw.previous }),
     ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
     ...(raw.memory === undefined ? {} : { memory: raw.memory }),
+    ...(raw.figures === undefined ? {} : { figures: raw.figures }),
   };
 }
 
@@ -215,6 +261,8 @@ function inOurWords(error: CommanderError, program: Command, argv: readonly stri
       return unknownOption(word, command);
     case "commander.optionMissingArgument":
       return new UsageError(`${word.split(" ")[0]} needs a value: ${word.replace(/[<>]/g, "")}`);
+    case "commander.missingMandatoryOptionValue":
+      return command && wrongArguments(`closeout ${command.name} needs ${word}.`, command);
     case "commander.missingArgument":
       return command && wrongArguments(`closeout ${command.name} needs ${word}.`, command);
     case "commander.excessArguments":

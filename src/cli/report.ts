@@ -5,7 +5,7 @@ import type { ExitStatus, Terminal } from "./terminal.ts";
 
 export interface ReportArguments {
   readonly plan: string;
-  readonly options: Pick<CloseoutOptions, "out" | "previous" | "fromCells" | "threads" | "memory">;
+  readonly options: Pick<CloseoutOptions, "out" | "previous" | "fromCells" | "figures" | "threads" | "memory">;
 }
 
 export async function report(

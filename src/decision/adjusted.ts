@@ -52,7 +52,7 @@ function adjustedEffect(
       balance: balance(control.covariate, variant.covariate, 1 - plan.decision.confidence),
       pAdjustedOfPlain: effect.pAdjusted,
     },
-    pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),
+    pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(plan, metric, p, variances),
     ...placed(metric, own),
   };
 }

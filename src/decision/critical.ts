@@ -6,9 +6,12 @@ import {
   criticalOfSimultaneous,
   isAbsent,
   level,
+  lookCritical,
   normalCritical,
   pOfSimultaneous,
 } from "../stats/index.ts";
+import { alphaOf } from "./alpha.ts";
+import { looksAsPlanned, looksSoFar, pAtLook } from "./looks.ts";
 
 /** The variances of the levels that the contrasts of one metric compare; the variants in plan order. */
 export interface Variances {
@@ -19,26 +22,32 @@ export interface Variances {
 /**
  * The critical value, on the normal's scale, that the intervals of a metric's contrasts take (METHODS 2): pointwise for a
  * secondary metric; for what decides the one that makes the intervals of all variants hold at once, Dunnett's, of a
- * quantile Bonferroni's.
+ * quantile Bonferroni's; with planned looks the boundary of this look, the error shared out evenly over the variants.
  */
 export function criticalOf(plan: Plan, metric: Metric, { control, variants }: Variances): number {
   const alpha = alphaOf(plan, metric);
   if (metric.role === "secondary") return normalCritical(alpha);
+  const looks = looksSoFar(plan);
+  if (looks !== null) return lookCritical(looks, alpha / variants.length);
   if (metric.summary === "quantile") return bonferroniCritical(alpha, variants.length);
   return criticalOfSimultaneous(control, variants, alpha);
 }
 
-/** p of one contrast, adjusted for the variants: under `alphaOf` exactly when the interval at `criticalOf` excludes 0. */
-export function pOfVariants(metric: Metric, p: number, { control, variants }: Variances): number {
+/** p of one contrast, adjusted for the variants and the looks: under `alphaOf` exactly when the interval at `criticalOf` excludes 0. */
+export function pOfVariants(plan: Plan, metric: Metric, p: number, { control, variants }: Variances): number {
+  if (plan.looks !== null) return bonferroniP(pAtLook(plan, p), variants.length);
   if (metric.summary === "quantile") return bonferroniP(p, variants.length);
   return pOfSimultaneous(p, control, variants);
 }
 
-/** alpha of all intervals of one metric together; where any one primary is enough, each of them has its part. */
-export function alphaOf({ decision, metrics }: Plan, { role }: Metric): number {
-  const alpha = 1 - decision.confidence;
-  if (role !== "primary" || decision.primaries === "all") return alpha;
-  return alpha / metrics.filter((metric) => metric.role === "primary").length;
+/**
+ * The critical value that a test like this one is judged by at its end, for sizes: with planned looks their last boundary,
+ * else the one that counts here.
+ */
+export function criticalAtEnd(plan: Plan, metric: Metric, critical: number): number {
+  const looks = looksAsPlanned(plan);
+  if (looks === null || metric.role === "secondary") return critical;
+  return lookCritical(looks, alphaOf(plan, metric) / (plan.variants.length - 1));
 }
 
 /** A variance that does not exist counts as 0: the critical value is Bonferroni's then, and holds whatever is missing. */

@@ -127,7 +127,7 @@ function effect(
     variant: variant.name,
     control: controlOf(plan).name,
     contrast: found,
-    pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(metric, p, variances),
+    pAdjusted: metric.role === "secondary" || p === null ? null : pOfVariants(plan, metric, p, variances),
     pHolm: null,
     adjusted: null,
     notAdjusted: null,

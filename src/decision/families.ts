@@ -1,17 +1,22 @@
 import type { Plan } from "../plan/types.ts";
 import { benjaminiHochberg, holm } from "../stats/index.ts";
 import { deciding } from "./deciding.ts";
+import { pAtLook } from "./looks.ts";
 import type { Effect } from "./types.ts";
 
 /**
  * p adjusted over what takes several metrics at once (METHODS 2), where each primary and guardrail has its p over the
  * variants already: under `primaries: any` Holm's over the primaries of a variant, on those; Benjamini and Hochberg's over
- * all contrasts of secondary metrics. Beside it Holm's p over the variants of a metric, under `any` of all primaries.
+ * all contrasts of secondary metrics. With planned looks they are adjusted for these first. Beside it Holm's p over the variants of a metric, under `any` of all primaries.
  */
 export function withFamilies(plan: Plan, effects: readonly Effect[]): Effect[] {
   const anyIsEnough = plan.decision.primaries === "any";
   const several = plan.variants.length > 2;
   const pOf = (effect: Effect) => deciding(effect).difference.p;
+  const pOfLook = (effect: Effect) => {
+    const p = pOf(effect);
+    return p === null ? null : pAtLook(plan, p);
+  };
   const secondary = adjusted(effects, ({ role }) => (role === "secondary" ? "all" : null), pOf, benjaminiHochberg);
   const primaries = adjusted(
     effects,
@@ -23,7 +28,7 @@ export function withFamilies(plan: Plan, effects: readonly Effect[]): Effect[] {
     if (!several || role === "secondary") return null;
     return anyIsEnough && role === "primary" ? role : `${role} ${metric}`;
   };
-  const beside = adjusted(effects, familyBeside, pOf, holm);
+  const beside = adjusted(effects, familyBeside, pOfLook, holm);
   return effects.map((effect, i) => ({
     ...effect,
     pAdjusted: secondary[i] ?? primaries[i] ?? effect.pAdjusted,

@@ -2,7 +2,7 @@ import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { type Absent, isAbsent, powerWith, type Question, sizeForAll } from "../stats/index.ts";
 import { metricOf } from "./measure.ts";
-import { analysedUnits, questionOf } from "./power.ts";
+import { analysedUnits, questionOfNextTest } from "./power.ts";
 import type { Effect } from "./types.ts";
 import { ruleOf } from "./zones.ts";
 
@@ -44,7 +44,7 @@ export function nextTest(plan: Plan, effects: readonly Effect[], reduction: Redu
   const counted = analysedUnits(reduction);
   const asked = effects
     .filter((effect) => ruleOf(metricOf(effect, plan)) !== null)
-    .map((effect) => ({ effect, question: questionOf(effect, plan, counted) }));
+    .map((effect) => ({ effect, question: questionOfNextTest(effect, plan, counted) }));
   const able: { effect: Effect; question: Question }[] = [];
   const unsized: Unsized[] = [];
   for (const { effect, question } of asked) {

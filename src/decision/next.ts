@@ -2,6 +2,8 @@ import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { count, endSize, list, plural, quoted } from "../words/index.ts";
 import { controlOf } from "./effects.ts";
+import { isInterim } from "./looks.ts";
+import { ALL_LOOKS_MADE, goOnSentence } from "./looks-words.ts";
 import { measure } from "./measure.ts";
 import { enrolledADay, plannedADay } from "./next-test.ts";
 import { analysedUnits } from "./power.ts";
@@ -28,8 +30,7 @@ export function nextSentences(
       return [
         ...notProven(plan, effects),
         whyNotSettled(plan, reduction),
-        whatWouldSettle(plan, effects, reduction),
-        'Adding days to this test now and looking again would make a false "adopt" more likely: plan the looks first.',
+        ...(isInterim(plan) ? [goOnSentence(plan)] : [whatWouldSettle(plan, effects, reduction), noMoreDays(plan)]),
         untilThen(plan),
       ];
     case "undecidable":
@@ -38,6 +39,11 @@ export function nextSentences(
         "Figures further back are for finding the fault, not for deciding.",
       ];
   }
+}
+
+function noMoreDays({ looks }: Plan): string {
+  if (looks !== null) return ALL_LOOKS_MADE;
+  return 'Adding days to this test now and looking again would make a false "adopt" more likely: plan the looks first.';
 }
 
 /** "This is not proof that nothing changed. …" for the first primary that is not settled. */

@@ -1,7 +1,7 @@
 import { type Arm, armsWithoutLargest, type ChoiceArms, choiceArms, loggedArms } from "../cells/index.ts";
 import type { MetricCells, Reduction } from "../engine/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
-import { contrastBy, isAbsent, isNotDrawn, normalUpperTail, relativeByEnds } from "../stats/index.ts";
+import { contrastBy, drawsReach, isAbsent, isNotDrawn, normalUpperTail, relativeByEnds } from "../stats/index.ts";
 import { bucketsOf } from "./buckets.ts";
 import { adjustedTwoArms, contrastsAsPlanned, criticalOfTwoArms, type TwoArms } from "./choice-contrasts.ts";
 import { type ChoiceRow, onlyP, planRow, row } from "./choice-rows.ts";
@@ -133,14 +133,18 @@ function byOtherMethods(plan: Plan, metric: Metric, own: readonly Effect[], plan
   });
 }
 
-/** Bootstrap-t, with a relative interval that excludes 0 when it does; of the randomisation test whether p is under alpha. */
+/**
+ * Bootstrap-t, with a relative interval that excludes 0 when it does; of the randomisation test whether p is under alpha. Neither
+ * where an early look asks for tails that the draws do not reach.
+ */
 function byBuckets(effect: Effect, metric: Metric, { control, variant }: Compared, alpha: number): ChoiceRow[] {
   const { resampled } = effect;
   const { difference } = deciding(effect);
   const { estimate, standardError } = difference;
   if (resampled === null || estimate === null || standardError === null) return [];
   const { bootstrap, randomisation } = resampled;
-  const drawn = isNotDrawn(bootstrap) ? null : { low: bootstrap.low, high: bootstrap.high };
+  const drawn =
+    isNotDrawn(bootstrap) || !drawsReach(alpha, bootstrap.draws) ? null : { low: bootstrap.low, high: bootstrap.high };
   return [
     ...(drawn === null
       ? []
@@ -155,7 +159,9 @@ function byBuckets(effect: Effect, metric: Metric, { control, variant }: Compare
             metric,
           ),
         ]),
-    ...(isNotDrawn(randomisation) ? [] : [onlyP("randomisation", estimate, randomisation.p, alpha, effect)]),
+    ...(isNotDrawn(randomisation) || !drawsReach(alpha, randomisation.deals)
+      ? []
+      : [onlyP("randomisation", estimate, randomisation.p, alpha, effect)]),
   ];
 }
 

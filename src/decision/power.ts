@@ -1,11 +1,13 @@
-import type { Reduction } from "../engine/types.ts";
 import type { Amount, Plan } from "../plan/types.ts";
 import { beyondWorthwhile, detectable, exaggeration, isAbsent, type Question, unitsFor } from "../stats/index.ts";
 import type { Absent, Contrast } from "../stats/types.ts";
+import { criticalAtEnd } from "./critical.ts";
 import { deciding } from "./deciding.ts";
 import { metricOf } from "./measure.ts";
 import type { Effect, Power } from "./types.ts";
 import { ruleOf } from "./zones.ts";
+
+export { analysedUnits } from "./analysed.ts";
 
 export const NO_POWER: Power = { detectable: null, unitsForWorthwhile: null, exaggeration: null };
 
@@ -18,7 +20,7 @@ export function withPower(effect: Effect, plan: Plan, units: number): Effect {
   const { critical, difference } = deciding(effect);
   const { standardError } = difference;
   if (standardError === null) return { ...effect, power: NO_POWER };
-  const asked = questionOf(effect, plan, units);
+  const asked = questionOfNextTest(effect, plan, units);
   const worthwhile = effect.role === "primary" ? amountOf(ruleOf(metricOf(effect, plan)), deciding(effect)) : null;
   return {
     ...effect,
@@ -43,6 +45,13 @@ export function questionOf(effect: Effect, plan: Plan, units: number): Question 
   return isAbsent(distance) ? distance : { units, critical: contrast.critical, standardError, distance };
 }
 
+/** The same of a test to come: with planned looks it is judged by the last of their boundaries, and not by this look's. */
+export function questionOfNextTest(effect: Effect, plan: Plan, units: number): Question | Absent | null {
+  const question = questionOf(effect, plan, units);
+  if (question === null || isAbsent(question)) return question;
+  return { ...question, critical: criticalAtEnd(plan, metricOf(effect, plan), question.critical) };
+}
+
 /** How far the true effect is taken to lie from the limit that the interval must clear, in the metric's unit. */
 function distanceOf(effect: Effect, plan: Plan, contrast: Contrast): number | Absent | null {
   const metric = metricOf(effect, plan);
@@ -55,9 +64,4 @@ function distanceOf(effect: Effect, plan: Plan, contrast: Contrast): number | Ab
 function amountOf(amount: Amount | null, { control }: Contrast): number | null {
   if (amount === null || amount.kind === "absolute") return amount === null ? null : amount.value;
   return control.mean !== null && control.mean > 0 ? amount.value * control.mean : null;
-}
-
-/** All analysed units of all arms. */
-export function analysedUnits({ unitLines }: Reduction): number {
-  return unitLines.find(({ id }) => id === "analysed")?.units ?? 0;
 }

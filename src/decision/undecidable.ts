@@ -16,7 +16,46 @@ const STOPS: readonly string[] = [
 
 /** Why no decision can be taken from these data, each with what to do; empty when one can. No estimate stands in it. */
 export function obstacles(plan: Plan, checks: readonly Check[], reduction: Reduction): string[] {
-  return [...failures(plan, checks).flatMap(({ check, parts }) => told(check, parts)), ...emptyArms(plan, reduction)];
+  const failed = failures(plan, checks);
+  const all = failed.flatMap(({ check, parts }) => parts.map((part) => ({ id: check.id, part })));
+  const told = failed.flatMap(({ check, parts }) =>
+    tellFault(
+      check,
+      parts.filter((part) => !isToldBefore(check.id, part, all)),
+      parts.length === 0,
+    ),
+  );
+  // One fault shows in several checks, and the remedy is one.
+  return [...new Set(told), ...emptyArms(plan, reduction)];
+}
+
+interface FailedPart {
+  readonly id: string;
+  readonly part: CheckPart;
+}
+
+/**
+ * Whether a failure follows from one that is told above it: units that leave at the line which broke the split, the same
+ * days or levels once more at a later stage, or those counted where those enrolled were uneven already.
+ */
+function isToldBefore(id: string, part: CheckPart, all: readonly FailedPart[]): boolean {
+  const before = all.slice(
+    0,
+    all.findIndex((one) => one.part === part),
+  );
+  const isNamed = (line: unknown) => line !== undefined && before.some((one) => one.part.figures.brokenAt === line);
+  const others = before.filter((one) => one.id === id);
+  switch (id) {
+    case "exits":
+      return isNamed(part.about);
+    case "allocation":
+      return part.figures.brokenAt === undefined ? others.length > 0 : isNamed(part.figures.brokenAt);
+    case "allocation-by-day":
+    case "allocation-by-level":
+      return part.figures.brokenAt === undefined ? part.figures.stage === "analysed" : isNamed(part.figures.brokenAt);
+    default:
+      return false;
+  }
 }
 
 interface Failure {
@@ -44,9 +83,11 @@ function stops(plan: Plan, check: Check, part: CheckPart): boolean {
   return check.id === "without-rows" && metric !== undefined && metric.role !== "secondary";
 }
 
-function told(check: Check, parts: readonly CheckPart[]): string[] {
-  const sentences = parts.length === 0 ? [check.sentence] : parts.map((part) => part.sentence);
-  return check.remedy === "" ? sentences : [...sentences, `What to do: ${check.remedy}`];
+function tellFault(check: Check, parts: readonly CheckPart[], isWhole: boolean): string[] {
+  const sentences = isWhole ? [check.sentence] : parts.map((part) => part.sentence);
+  const remedies = isWhole ? [check.remedy] : parts.map((part) => part.remedy ?? check.remedy);
+  const toDo = [...new Set(remedies)].filter((remedy) => remedy !== "").map((remedy) => `What to do: ${remedy}`);
+  return sentences.length === 0 ? [] : [...sentences, ...toDo];
 }
 
 function emptyArms(plan: Plan, reduction: Reduction): string[] {

@@ -15,7 +15,8 @@ export async function* textOf(file: string): AsyncGenerator<string> {
   yield decoder.decode();
 }
 
-async function* contentOf(file: string): AsyncGenerator<Uint8Array> {
+/** The bytes of a file in pieces, decompressed by its ending. */
+export async function* contentOf(file: string): AsyncGenerator<Uint8Array> {
   if (/\.gz$/i.test(file)) yield* gunzipped(file);
   else if (/\.zst$/i.test(file)) yield* zstandard(bytesOf(file));
   else yield* bytesOf(file);
@@ -43,18 +44,19 @@ async function* zstandard(pieces: AsyncIterable<Uint8Array>): AsyncGenerator<Uin
 
 /**
  * Whether a compressed file is whole; null for a plain one. Engines read half a file without a word.
- * gzip is decompressed, for its end cannot be told otherwise; of Zstandard only the block headers are read.
+ * gzip is decompressed, for its end cannot be told otherwise, and `also` is shown each piece of it; of Zstandard only the
+ * block headers are read.
  */
-export async function isWhole(file: string): Promise<boolean | null> {
+export async function isWhole(file: string, also: (piece: Uint8Array) => void = () => {}): Promise<boolean | null> {
   if (!/\.(gz|zst)$/i.test(file)) return null;
   // Not even an empty text packs to no bytes at all.
   if ((await stat(file)).size === 0) return false;
-  return /\.gz$/i.test(file) ? isWholeGzip(file) : isWholeZstandard(bytesOf(file));
+  return /\.gz$/i.test(file) ? isWholeGzip(file, also) : isWholeZstandard(bytesOf(file));
 }
 
-async function isWholeGzip(file: string): Promise<boolean> {
+async function isWholeGzip(file: string, also: (piece: Uint8Array) => void): Promise<boolean> {
   try {
-    for await (const _piece of gunzipped(file));
+    for await (const piece of gunzipped(file)) also(piece);
     return true;
   } catch (error) {
     // Z_BUF_ERROR, Z_DATA_ERROR: what is packed is at fault, and not the reading of the file.

@@ -69,12 +69,16 @@ export async function isFile(file: string): Promise<boolean> {
   );
 }
 
-/** Byte count and SHA-256 of a file, read once. */
-export async function fingerprint(file: string): Promise<{ bytes: number; sha256: string }> {
+/** Byte count and SHA-256 of a file, read once; `also` is shown each piece. */
+export async function fingerprint(
+  file: string,
+  also: (piece: Uint8Array) => void = () => {},
+): Promise<{ bytes: number; sha256: string }> {
   const hash = createHash("sha256");
   let bytes = 0;
   for await (const chunk of createReadStream(file, { highWaterMark: 1 << 20 })) {
     hash.update(chunk as Buffer);
+    also(chunk as Buffer);
     bytes += (chunk as Buffer).length;
   }
   return { bytes, sha256: hash.digest("hex") };

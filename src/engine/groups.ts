@@ -195,8 +195,8 @@ function exactly(power: number): bigint {
 
 const rounded = (value: bigint, bits: bigint): bigint => (value + (1n << (bits - 1n))) >> bits;
 const joined = (high: readonly bigint[], low: readonly bigint[], i: number) => (at(high, i) << LOW_BITS) + at(low, i);
-const lesser = (a: bigint, b: bigint) => (a < b ? a : b);
-const greater = (a: bigint, b: bigint) => (a > b ? a : b);
+export const lesser = (a: bigint, b: bigint) => (a < b ? a : b);
+export const greater = (a: bigint, b: bigint) => (a > b ? a : b);
 
 function at<T>(column: readonly T[], i: number): T {
   const value = column[i];

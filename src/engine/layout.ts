@@ -1,4 +1,4 @@
-import type { Filter, Part, Plan, Where } from "../plan/types.ts";
+import type { Filter, Incident, Part, Plan, Where } from "../plan/types.ts";
 import type { FileGroup } from "./source.ts";
 
 /**
@@ -18,6 +18,8 @@ export interface Layout {
   readonly standIns: readonly (StandIn | null)[];
   /** Columns whose value at enrolment is a covariate. */
   readonly covariateColumns: readonly number[];
+  /** Columns whose value at enrolment divides the units, in plan order. */
+  readonly subgroupColumns: readonly number[];
   readonly hasTime: boolean;
   readonly hasEventId: boolean;
   /** Distinct conditions of metric parts (m<i>). */
@@ -27,7 +29,10 @@ export interface Layout {
   /** In plan order. A flag is a condition tested while reading (w<i>). */
   readonly unitFilters: readonly UnitFilterLayout[];
   readonly flags: readonly Where[];
+  /** In plan order; a flag is a condition on the enrolling row, null where the incident was everywhere. */
+  readonly incidents: readonly IncidentLayout[];
 }
+export type IncidentLayout = Pick<Incident, "name" | "fromUs" | "beforeUs"> & { readonly flag: number | null };
 
 export interface StandIn {
   readonly role: "unit" | "event" | "event_id";
@@ -58,6 +63,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
   const conditions = [
     ...parts.map(({ part }) => part.where),
     ...plan.filters.flatMap((filter) => ("where" in filter ? [filter.where] : [])),
+    ...plan.incidents.map((incident) => incident.where),
   ];
   const tested = conditions.flatMap((tests) => tests.map((test) => test.column));
   const columns = [...new Set([...plan.columns, ...plan.numericColumns, ...tested])];
@@ -72,6 +78,10 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
     flags.push(filter.where);
     return [{ name: filter.name, kind: filter.when, flag: flags.length - 1 }];
   });
+  const incidents = plan.incidents.map(({ name, fromUs, beforeUs, where }): IncidentLayout => {
+    const flag = where.length === 0 ? null : flags.push(where) - 1;
+    return { name, fromUs, beforeUs, flag };
+  });
   return {
     columns,
     ordered: plan.columns.length,
@@ -83,6 +93,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
         ),
       ),
     ],
+    subgroupColumns: plan.subgroups.map((column) => columns.indexOf(column)),
     standIns: columns.map((column) => (plan.numericColumns.includes(column) ? null : standIn(plan, groups, column))),
     hasTime: plan.log.every((source) => source.columns.time !== null),
     hasEventId: plan.log.some((source) => source.columns.eventId !== null),
@@ -97,6 +108,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
     rowFilters: plan.filters.filter((filter) => filter.drop === "rows"),
     unitFilters,
     flags,
+    incidents,
   };
 }
 

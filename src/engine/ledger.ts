@@ -2,6 +2,7 @@ import type { Plan } from "../plan/index.ts";
 import { count, type Engine, type Row, text, wholeOrNull } from "./engine.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import {
+  analysedByDay,
   analysedRows,
   copyCounts,
   enrolledByVariant,
@@ -14,6 +15,7 @@ import {
   rowsByFile,
   rowsByReason,
   unitsByLine,
+  unitsInIncidents,
   unitsWithFate,
   valueList,
   variantCounts,
@@ -65,7 +67,8 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
   };
 }
 
-const rowLineId = (unitLine: string) =>
+/** The row ledger's line for the rows of units on one of theirs. */
+export const rowLineId = (unitLine: string) =>
   unitLine.startsWith("filter:") ? `unit-filter:${unitLine.slice("filter:".length)}` : `unit-${unitLine}`;
 
 /**
@@ -99,8 +102,15 @@ export function reasonText(reason: number, layout: Layout): string {
   return isRange ? `out of range: ${column}` : `not a number: ${column}`;
 }
 
+type CountedFacts = Omit<Facts, "soundness" | "subgroups">;
+
 /** What the checks look at. */
-export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs: bigint | null): Promise<Facts> {
+export async function facts(
+  plan: Plan,
+  layout: Layout,
+  engine: Engine,
+  logEndUs: bigint | null,
+): Promise<CountedFacts> {
   const ids = unitLineIds(plan);
   const unknown = ids.indexOf("unknown-variant");
   const enrolled = await engine.query(enrolledByVariant(unknown));
@@ -108,8 +118,10 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
   const duplicated = await engine.query(unitsWithFate(FATE.duplicate, unknown));
   const copied = layout.hasEventId ? (await engine.query(copyCounts(layout)))[0] : undefined;
   const [range = {}] = await engine.query(enrolmentRange(ids.length - 1));
+  const [kept = {}] = await engine.query(enrolmentRange(ids.length - (plan.followUp === null ? 1 : 2)));
   const named = await engine.query(variantCounts());
   const others = await engine.query(otherVariantCounts(VALUES_KEPT));
+  const days = layout.hasTime ? await engine.query(analysedByDay()) : [];
   const events = (await engine.query(eventCounts(VALUES_KEPT))).map((row) => ({
     value: text(row, "value"),
     rows: count(row, "rows"),
@@ -138,9 +150,26 @@ export async function facts(plan: Plan, layout: Layout, engine: Engine, logEndUs
     firstEnrolledUs: layout.hasTime ? wholeOrNull(range, "first_us") : null,
     lastEnrolledUs: layout.hasTime ? wholeOrNull(range, "last_us") : null,
     logEndUs,
+    analysedByDay: [...new Set(days.map((row) => count(row, "day")))].map((day) => ({
+      day,
+      units: byVariant(
+        plan,
+        days.filter((row) => count(row, "day") === day),
+        "units",
+      ),
+    })),
+    inIncidents: await inIncidents(plan, engine),
+    firstKeptUs: layout.hasTime ? wholeOrNull(kept, "first_us") : null,
+    lastKeptUs: layout.hasTime ? wholeOrNull(kept, "last_us") : null,
   };
 }
 const VALUES_KEPT = 200;
+
+async function inIncidents(plan: Plan, engine: Engine): Promise<ByVariant[]> {
+  if (plan.incidents.length === 0) return [];
+  const rows = await engine.query(unitsInIncidents(plan.incidents.length));
+  return plan.incidents.map((_, k) => byVariant(plan, rows, `units${k}`));
+}
 
 async function missingEvents(plan: Plan, commonest: readonly ValueCount[], engine: Engine): Promise<string[]> {
   const parts = plan.metrics.flatMap((metric) => [metric.of, ...(metric.per === null ? [] : [metric.per])]);

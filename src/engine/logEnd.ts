@@ -10,36 +10,55 @@ export interface TimeBin {
 
 const LONGEST_GAP_US = 7n * 86_400_000_000n;
 
+/** A source's span: its run of rows without a gap of more than 7 days that holds most of them. */
+export interface SourceSpan {
+  readonly source: number;
+  readonly firstUs: bigint;
+  readonly lastUs: bigint;
+  /** Rows in the span, and rows outside it. */
+  readonly rows: number;
+  readonly outside: number;
+  readonly counted: boolean;
+}
+
 /**
- * The log's end (DESIGN 4, rule 7): the earliest end of a source's span, over the sources that hold a row that some metric
- * counts (all, if none does). A span is the run of rows without a gap of more than 7 days that holds most rows; of runs
- * with equally many the later.
+ * The span of every source (DESIGN 4, rule 7); of runs with equally many rows the later.
  *
  * @param bins of each source in order of time
+ */
+export function spansOf(bins: readonly TimeBin[]): SourceSpan[] {
+  const sources = [...new Set(bins.map((bin) => bin.source))].sort((a, b) => a - b);
+  return sources.map((source) => {
+    const own = bins.filter((bin) => bin.source === source);
+    const span = longestRun(own);
+    const all = own.reduce((sum, { rows }) => sum + rows, 0);
+    return { source, ...span, outside: all - span.rows, counted: own.some((bin) => bin.counted) };
+  });
+}
+
+/**
+ * The log's end (DESIGN 4, rule 7): the earliest end of a source's span, over the sources that hold a row that some metric
+ * counts (all, if none does).
+ *
  * @returns null without rows
  */
-export function logEnd(bins: readonly TimeBin[]): bigint | null {
-  const sources = [...new Set(bins.map((bin) => bin.source))].map((source) => {
-    const own = bins.filter((bin) => bin.source === source);
-    return { end: spanEnd(own), counted: own.some((bin) => bin.counted) };
-  });
-  const counting = sources.filter((source) => source.counted);
-  const ends = (counting.length > 0 ? counting : sources).map((source) => source.end);
+export function logEnd(spans: readonly SourceSpan[]): bigint | null {
+  const counting = spans.filter((span) => span.counted);
+  const ends = (counting.length > 0 ? counting : spans).map((span) => span.lastUs);
   const [earliest = null] = [...ends].sort((a, b) => (a < b ? -1 : a > b ? 1 : 0));
   return earliest;
 }
 
-function spanEnd(bins: readonly TimeBin[]): bigint {
-  const runs: { rows: number; lastUs: bigint }[] = [];
+function longestRun(bins: readonly TimeBin[]): { rows: number; firstUs: bigint; lastUs: bigint } {
+  const runs: { rows: number; firstUs: bigint; lastUs: bigint }[] = [];
   for (const bin of bins) {
     const run = runs.at(-1);
     if (run === undefined || bin.firstUs - run.lastUs > LONGEST_GAP_US) {
-      runs.push({ rows: bin.rows, lastUs: bin.lastUs });
+      runs.push({ rows: bin.rows, firstUs: bin.firstUs, lastUs: bin.lastUs });
     } else {
       run.rows += bin.rows;
       run.lastUs = bin.lastUs;
     }
   }
-  const longest = runs.reduce((a, b) => (b.rows >= a.rows ? b : a));
-  return longest.lastUs;
+  return runs.reduce((a, b) => (b.rows >= a.rows ? b : a));
 }

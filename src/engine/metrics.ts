@@ -6,9 +6,10 @@ import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
 import type { MeasuredMetric } from "./measuredMetric.ts";
 import { scoreTables } from "./scores.ts";
-import { capped, countedRows, type Dialect, leftOut, name, type Statement, sql } from "./sql/index.ts";
-import { type DecimalMeasure, decimalMeasures, decimalTables, jointTables } from "./tables.ts";
-import type { CellTable, MetricCells } from "./types.ts";
+import { sizeTables } from "./sizes.ts";
+import { capped, countedRows, type Dialect, EACH_BUCKET, leftOut, name, type Statement, sql } from "./sql/index.ts";
+import { type DecimalMeasure, decimalMeasures, groupedJointTables, groupedTables } from "./tables.ts";
+import type { CellTable, GroupCells, JointTable, MetricCells, MetricGroups } from "./types.ts";
 
 /** A metric's values over a row of `candidates`. */
 export interface MetricValue {
@@ -43,13 +44,17 @@ export async function metricValues(
   );
 }
 
-/** Stages 9 and 10: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices. */
+/**
+ * Stages 9 and 10: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices.
+ * @param groupings by which else than buckets the units are summed, over a row of `candidates`
+ */
 export async function metricCells(
   plan: Plan,
   values: readonly MetricValue[],
+  groupings: Groupings,
   engine: Engine,
   dialect: Dialect,
-): Promise<MetricCells[]> {
+): Promise<{ readonly metrics: MetricCells[]; readonly groups: Omit<MetricGroups, "sinceEnrolment">[] }> {
   // A covariate counts over the units that have a value too.
   const paired = values.map(({ per, covariate, value }) =>
     covariate === null ? per : sql`CASE WHEN ${value} IS NOT NULL THEN ${covariate} END`,
@@ -57,14 +62,17 @@ export async function metricCells(
   const partners = paired.flatMap((x, m) => (x === null ? [] : [{ m, x }]));
   const all = [...values.map(({ value }) => value), ...partners.map(({ x }) => x)];
   const measures = await decimalMeasures(all, sql`units`, engine, dialect);
-  const tables = await decimalTables(measures, engine);
+  const over = { ...EACH_BUCKET, others: [...(groupings.day === null ? [] : [groupings.day]), ...groupings.levels] };
+  const grouped = await groupedTables(measures, engine, over);
+  const tables = grouped.map((all) => tableOf(all, 0));
   const pairs = partners.map(({ m }, i) => ({
     y: measureOf(measures, m),
     x: measureOf(measures, values.length + i),
-    ofY: tableOf(tables, m),
-    ofX: tableOf(tables, values.length + i),
+    ofY: grouped[m] ?? [],
+    ofX: grouped[values.length + i] ?? [],
   }));
-  const joints = await jointTables(pairs, engine);
+  const groupedJoints = await groupedJointTables(pairs, engine, over);
+  const joints = groupedJoints.map(([byBucket]) => byBucket);
   const ratios = values.flatMap(({ value, per }, m) => (per === null ? [] : [{ m, a: value, b: per }]));
   const scores = await scoreTables(plan, ratios, engine, dialect);
   const measured = plan.metrics.map((metric, m): MeasuredMetric => {
@@ -76,7 +84,7 @@ export async function metricCells(
       cap: values[m]?.cap ?? null,
       y: measureOf(measures, m),
       of: tableOf(tables, m),
-      paired: pair === undefined || joint === undefined ? null : { x: pair.x, of: pair.ofX, joint },
+      paired: pair === undefined || joint === undefined ? null : { x: pair.x, of: tableOf(pair.ofX, 0), joint },
     };
   });
   const choices = await choiceCells(plan, measured, engine, dialect);
@@ -94,9 +102,21 @@ export async function metricCells(
       dialect,
     ),
   );
+  const shaped = plan.metrics.flatMap(({ summary }, m) => (summary === "proportion" ? [] : [m]));
+  const sizes = await sizeTables(
+    shaped.map((m) => values[m]?.value ?? sql`NULL`),
+    engine,
+    dialect,
+  );
   const [rows = {}] = await engine.query(countedRows(plan.metrics.length));
 
-  return plan.metrics.map((metric, m) => {
+  const groups = plan.metrics.map((metric, m) => {
+    const partner = partners.findIndex((one) => one.m === m);
+    const own = metric.summary === "quantile" ? [] : groupsOf(grouped[m] ?? [], groupedJoints[partner] ?? null);
+    const [byDay = null] = groupings.day === null ? [] : own;
+    return { metric: metric.name, byDay, byLevel: own.slice(groupings.day === null ? 0 : 1) };
+  });
+  const metrics = plan.metrics.map((metric, m) => {
     const partner = partners.findIndex((one) => one.m === m);
     const x = tables[values.length + partner];
     const joint = joints[partner];
@@ -113,10 +133,23 @@ export async function metricCells(
       of: tableOf(tables, m),
       ratio: hasPartner && score !== undefined ? { per: x, score, joint } : null,
       covariate: hasPartner && metric.adjustFor !== null ? { x, joint } : null,
+      sizes: sizes[shaped.indexOf(m)] ?? null,
       choices: choices[m] ?? [],
       ends: ends[m] ?? [],
     };
   });
+  return { metrics, groups };
+}
+
+/** What divides the analysed units, over a row of `candidates`: the day of enrolment, where there is time, and levels. */
+export interface Groupings {
+  readonly day: Statement | null;
+  readonly levels: readonly Statement[];
+}
+
+/** All groupings but that by bucket. */
+function groupsOf(tables: readonly CellTable[], joints: readonly JointTable[] | null): GroupCells[] {
+  return tables.slice(1).map((of, g) => ({ of, joint: joints?.[g + 1] ?? null }));
 }
 
 function tableOf(tables: readonly CellTable[], m: number): CellTable {

@@ -1,24 +1,49 @@
 import type { Plan } from "../plan/index.ts";
-import { isWhole } from "./compression.ts";
+import { contentOf, isWhole } from "./compression.ts";
 import { count, type Engine } from "./engine.ts";
-import { fingerprint } from "./files.ts";
+import { fingerprint, type LogFile } from "./files.ts";
 import { FATE, type Layout } from "./layout.ts";
 import { rowsPerFile } from "./ledger.ts";
 import type { OpenLog } from "./open.ts";
+import { delimiterOf } from "./records.ts";
 import { rewritten } from "./rewrite.ts";
 import type { FileGroup } from "./source.ts";
-import { brokenQuotes, type Dialect, forgetRows, rows, sql, unreadableRows } from "./sql/index.ts";
+import { brokenQuotes, type Dialect, forgetRows, linesWithSurplus, rows, sql, unreadableRows } from "./sql/index.ts";
+import { surplusFinder } from "./surplus.ts";
 import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
 import type { Step } from "./zone.ts";
 
-/** Bytes and hash of every file, one after the other; a compressed file that ends early stops the run. */
-export async function inputFingerprints(log: OpenLog): Promise<{ bytes: number; sha256: string }[]> {
-  const prints: { bytes: number; sha256: string }[] = [];
-  for (const file of log.files) {
-    if ((await isWhole(file.path)) === false) throw endsEarly(file.name);
-    prints.push(await fingerprint(file.path));
-  }
-  return prints;
+/** What is known of a file from its bytes. */
+export interface Fingerprint {
+  readonly bytes: number;
+  readonly sha256: string;
+  /** Whether it has rows with empty cells more than the header; null where its text was not looked at. */
+  readonly surplus: boolean | null;
+}
+
+/** Of every file, one after the other; a compressed file that ends early stops the run. */
+export function inputFingerprints(log: OpenLog): Promise<Fingerprint>[] {
+  let before: Promise<unknown> = Promise.resolve();
+  return log.files.map((file, index) => {
+    const own = before.then(() => fingerprintOf(log, file, index));
+    // A failure is met where it is awaited; until then it must not count as unhandled.
+    own.catch(() => undefined);
+    before = own;
+    return own;
+  });
+}
+
+async function fingerprintOf(log: OpenLog, { name, path, format }: LogFile, index: number): Promise<Fingerprint> {
+  const group = log.groups.find(({ files }) => files.some((member) => member.index === index));
+  const finder =
+    group !== undefined && (format === "csv" || format === "tsv")
+      ? surplusFinder(delimiterOf(format), group.columns.length)
+      : null;
+  const whole = await isWhole(path, finder?.add);
+  if (whole === false) throw endsEarly(name);
+  const print = await fingerprint(path, whole === null ? finder?.add : undefined);
+  const isSeen = whole === null || /\.gz$/i.test(path);
+  return { ...print, surplus: finder === null ? false : isSeen ? finder.end() : null };
 }
 
 /** Reads every group into `rows`; gives the groups as they were read in the end. */
@@ -30,6 +55,7 @@ export async function readRows(
   workFolder: string,
   engine: Engine,
   dialect: Dialect,
+  prints: readonly Promise<Fingerprint>[],
   signal: AbortSignal | undefined,
 ): Promise<FileGroup[]> {
   const groups: FileGroup[] = [];
@@ -39,10 +65,11 @@ export async function readRows(
   };
   for (const [i, group] of log.groups.entries()) {
     try {
-      groups.push(await readGroup(group, i === 0 ? "create" : "insert", read, workFolder, engine));
+      groups.push(await readGroup(group, i === 0 ? "create" : "insert", read, prints, workFolder, engine));
       await dropRejects(engine);
     } catch (cause) {
       signal?.throwIfAborted();
+      if (cause instanceof UnusableLog) throw cause;
       const names = group.files.map((file) => log.files[file.index]?.name ?? "").join(", ");
       const told = group.files.reduce(
         (text, file) => text.replaceAll(file.path, log.files[file.index]?.name ?? ""),
@@ -56,12 +83,14 @@ export async function readRows(
 
 /**
  * One group, or a copy of it in one form where the engine's reader refuses its files or cannot be trusted with them: behind
- * a cell whose quote closes in its middle it may take two records for one, or cut the next one elsewhere.
+ * a cell whose quote closes in its middle it may take two records for one, or cut the next one elsewhere; and it lets rows
+ * pass that have empty cells more than the header.
  */
 async function readGroup(
   group: FileGroup,
   into: "create" | "insert",
   read: (group: FileGroup, into: "create" | "insert") => Promise<void>,
+  prints: readonly Promise<Fingerprint>[],
   workFolder: string,
   engine: Engine,
 ): Promise<FileGroup> {
@@ -69,7 +98,7 @@ async function readGroup(
   let next = into;
   try {
     await read(group, into);
-    if (!isText || !(await hasBrokenQuotes(engine))) return group;
+    if (!isText || !((await hasBrokenQuotes(engine)) || (await hasSurplus(group, prints, engine)))) return group;
     await engine.run(forgetRows(group));
     next = "insert";
   } catch (cause) {
@@ -83,6 +112,22 @@ async function readGroup(
 
 const hasBrokenQuotes = async (engine: Engine) =>
   (await engine.query(brokenQuotes())).some((row) => count(row, "records") > 0);
+
+/** Zstandard is unpacked by the engine first, which says whether any line may have it: it is quicker at that. */
+async function hasSurplus(group: FileGroup, prints: readonly Promise<Fingerprint>[], engine: Engine): Promise<boolean> {
+  const delimiter = delimiterOf(group.format);
+  for (const { index, path } of group.files) {
+    const surplus = (await prints[index])?.surplus ?? null;
+    if (surplus === true) return true;
+    if (surplus === false) continue;
+    const [lines] = await engine.query(linesWithSurplus(delimiter, group.columns.length, path));
+    if (lines === undefined || count(lines, "lines") === 0) continue;
+    const finder = surplusFinder(delimiter, group.columns.length);
+    for await (const piece of contentOf(path)) finder.add(piece);
+    if (finder.end()) return true;
+  }
+  return false;
+}
 
 /** The reader gives up on a whole file that mixes line ends. */
 const isRefusal = (cause: unknown) => cause instanceof Error && cause.message.includes("reached an invalid state");

@@ -11,7 +11,8 @@ export interface RawRecord {
   readonly cells: readonly string[] | null;
 }
 
-export const delimiterOf = (format: "csv" | "tsv" | "ndjson" | "parquet"): string => (format === "tsv" ? "\t" : ",");
+export const delimiterOf = (format: "csv" | "tsv" | "ndjson" | "parquet"): "," | "\t" =>
+  format === "tsv" ? "\t" : ",";
 
 /** The longest record; the engine's reader has the same limit. More is a quote that does not close. */
 export const LONGEST_RECORD = 4 * 1024 * 1024;
@@ -81,11 +82,8 @@ export function cells(record: string, delimiter: string): string[] | null {
 /** A cell as RFC 4180 writes it in quotes. */
 export const quoted = (cell: string): string => `"${cell.replaceAll('"', '""')}"`;
 
-/** Whether a record fits a header: as many cells, or more that are empty and stand at the end without quotes. */
-export function fits({ text, cells }: RawRecord, width: number, delimiter: string): boolean {
-  if (cells === null || cells.length < width) return false;
-  return text.endsWith(delimiter.repeat(cells.length - width));
-}
+/** Whether a record fits a header: it has as many cells. */
+export const fits = ({ cells }: RawRecord, width: number): boolean => cells !== null && cells.length === width;
 
 /** Where the record that starts at `from` ends: outside quotes, at LF, CR LF or CR. Null: it goes on. */
 function recordEnd(text: string, from: number, delimiter: string): { at: number; next: number } | null {

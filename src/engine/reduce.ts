@@ -7,13 +7,17 @@ import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
 import { isFile, neighbours } from "./files.ts";
 import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
+import { levels } from "./levels.ts";
 import { readLists } from "./lists.ts";
-import { logEnd } from "./logEnd.ts";
+import { logEnd, type SourceSpan, spansOf } from "./logEnd.ts";
+import { metricLedgers } from "./metricLedger.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import { openSession, type Session } from "./session.ts";
+import { sinceEnrolment } from "./sinceEnrolment.ts";
+import { soundness } from "./soundness.ts";
 import {
   atEnrolment,
   candidates,
@@ -24,13 +28,14 @@ import {
   enrolmentRange,
   enrolments,
   markDuplicates,
+  name,
   needsEnrollingRow,
   seen,
   timeBins,
   timeRange,
   units,
 } from "./sql/index.ts";
-import type { Reduction } from "./types.ts";
+import type { MetricCells, MetricLedger, Reduction } from "./types.ts";
 import { dayRuns, localDay, offsetsByLocalTime } from "./zone.ts";
 
 export interface ReduceOptions {
@@ -59,12 +64,34 @@ export const reduce = (planned: Plan | null, source: PlanSource, folder: string,
  * @returns what `use` gives, or what is wrong between plan and log
  * @throws UnusableLog when the log is there but cannot be used
  */
-export async function withReduction<T>(
+export function withReduction<T>(
   planned: Plan | null,
   source: PlanSource,
   folder: string,
   options: ReduceOptions,
   use: (plan: Plan, reduction: Reduction, session: Session) => Promise<T>,
+): Promise<T | { problems: readonly Problem[] }> {
+  return withLog(planned, source, folder, options, async (plan, opened) => {
+    const { reduction, values } = await stages(plan, folder, opened, duckdb, options);
+    return use(plan, reduction, openSession(plan, values, opened.engine, duckdb));
+  });
+}
+
+/** An opened log, and the engine to read it with. */
+export interface Opened {
+  readonly log: OpenLog;
+  readonly engine: Engine;
+  /** For what is gone afterwards. */
+  readonly workFolder: string;
+}
+
+/** Opens a plan's log, uses it and tidies up. @returns what `use` gives, or what is wrong between plan and log */
+export async function withLog<T>(
+  planned: Plan | null,
+  source: PlanSource,
+  folder: string,
+  options: ReduceOptions,
+  use: (plan: Plan, opened: Opened) => Promise<T>,
 ): Promise<T | { problems: readonly Problem[] }> {
   const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
   const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
@@ -74,8 +101,7 @@ export async function withReduction<T>(
     const log = await openLog(source, folder, engine, workFolder);
     const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
     if (planned === null || problems.length > 0) return { problems };
-    const { reduction, values } = await stages(planned, folder, workFolder, log, engine, duckdb, options);
-    return await use(planned, reduction, openSession(planned, values, engine, duckdb));
+    return await use(planned, { log, engine, workFolder });
   } finally {
     options.signal?.removeEventListener("abort", stop);
     engine.close();
@@ -83,15 +109,14 @@ export async function withReduction<T>(
   }
 }
 
-async function stages(
+/** Stages 1 to 6: the rows read, their duplicates marked, and the units enrolled. */
+export async function enrolUnits(
   plan: Plan,
   folder: string,
-  workFolder: string,
-  log: OpenLog,
-  engine: Engine,
+  { log, engine, workFolder }: Opened,
   dialect: Dialect,
   options: ReduceOptions,
-): Promise<{ reduction: Reduction; values: MetricValue[] }> {
+) {
   const layout = layoutOf(plan, log.groups);
   let rowsRead = 0;
   const stage = (name: string, share: number) => {
@@ -99,11 +124,12 @@ async function stages(
     options.progress?.({ stage: name, rows: rowsRead, share });
   };
   stage("reading the log", 0);
-  const fingerprints = inputFingerprints(log);
+  const prints = inputFingerprints(log);
+  const fingerprints = Promise.all(prints);
   // A failure is met where it is awaited; until then it must not count as unhandled.
   fingerprints.catch(() => undefined);
   const zone = offsetsByLocalTime(plan.timezone);
-  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, options.signal);
+  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, prints, options.signal);
   // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
   await refuseWithoutRows(log, engine).catch(async (error: unknown) => {
     await fingerprints;
@@ -122,22 +148,48 @@ async function stages(
   const [range = {}] = await engine.query(timeRange());
   const firstUs = wholeOrNull(range, "first_us");
   const lastUs = wholeOrNull(range, "last_us");
-  const logEndUs = layout.hasTime ? await endOfLog(layout, engine) : null;
+  const spans = layout.hasTime ? await spansOfLog(layout, engine) : [];
+  const logEndUs = logEnd(spans);
   const key = enrolmentKey(plan, firstUs, lastUs);
   await engine.run(seen(plan, layout, key));
   if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
   await engine.run(enrolments(plan, layout, key, logEndUs));
+  return { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, spans, key, logEndUs, stage };
+}
 
+async function stages(
+  plan: Plan,
+  folder: string,
+  opened: Opened,
+  dialect: Dialect,
+  options: ReduceOptions,
+): Promise<{ reduction: Reduction; values: MetricValue[] }> {
+  const { log, engine } = opened;
+  const enrolled = await enrolUnits(plan, folder, opened, dialect, options);
+  const { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, spans, key, logEndUs, stage } = enrolled;
   stage("adding up each unit", 0.75);
+  const subgroups = await levels(plan, layout, engine, dialect);
+  const levelCodes = subgroups.map(({ code }) => code);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
   const firstDay = await firstEnrolmentDay(plan, layout, engine);
-  await engine.run(candidates(plan, layout, days, firstDay, dialect));
+  await engine.run(candidates(plan, layout, days, firstDay, levelCodes, logEndUs, dialect));
   await engine.run(units());
   stage("adding up cells", 0.9);
   const values = await metricValues(plan, layout, engine, dialect);
-  const metrics = await metricCells(plan, values, engine, dialect);
+  const groupings = { day: layout.hasTime ? name("day") : null, levels: subgroups.map((_, s) => name(`k${s}`)) };
+  const { metrics, groups: grouped } = await metricCells(plan, values, groupings, engine, dialect);
+  const since = await sinceEnrolment(plan, layout, values, logEndUs, engine, dialect);
   const account = await ledger(plan, layout, engine);
+  const ledgers = await metricLedgers(plan, layout, engine);
+  refuseOtherCounts(plan, metrics, ledgers);
   const found = await facts(plan, layout, engine, logEndUs);
+  const bySubgroup = subgroups.map((subgroup) => subgroup.found);
+  const sound = await soundness(
+    plan,
+    { layout, key, days, levels: levelCodes, spans, logEndUs, account },
+    found.enrolled,
+    engine,
+  );
   const prints = await fingerprints;
   if (options.rejectsTo !== undefined) {
     await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
@@ -153,10 +205,22 @@ async function stages(
     })),
     lists,
     ...account,
-    facts: found,
+    facts: { ...found, subgroups: bySubgroup, soundness: sound },
     metrics,
+    groups: grouped.map((group, m) => ({ ...group, sinceEnrolment: since[m] ?? null })),
+    metricLedgers: ledgers,
   };
   return { reduction, values };
+}
+
+/** What a metric's ledger counts must be what its cells count; a ratio's cells count the rows of both parts. */
+function refuseOtherCounts(plan: Plan, metrics: readonly MetricCells[], ledgers: readonly MetricLedger[]): void {
+  for (const [m, { name, per }] of plan.metrics.entries()) {
+    const [inLedger, inCells] = [ledgers[m]?.lines.at(-1)?.rows, metrics[m]?.countedRows];
+    if (per === null && inLedger !== inCells) {
+      throw new Error(`${name}: its ledger ends with ${inLedger} rows but ${inCells} were counted`);
+    }
+  }
 }
 
 /** The local day on which the first analysed unit was enrolled. */
@@ -167,9 +231,9 @@ async function firstEnrolmentDay(plan: Plan, layout: Layout, engine: Engine): Pr
   return firstUs === null ? null : localDay(firstUs, plan.timezone);
 }
 
-async function endOfLog(layout: Layout, engine: Engine): Promise<bigint | null> {
+async function spansOfLog(layout: Layout, engine: Engine): Promise<SourceSpan[]> {
   const bins = await engine.query(timeBins(layout));
-  return logEnd(
+  return spansOf(
     bins.map((row) => ({
       source: count(row, "source"),
       rows: count(row, "rows"),

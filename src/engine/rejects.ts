@@ -113,7 +113,7 @@ async function placedRows(
     } else if (hasBrokenText && text.includes("\uFFFD")) {
       // Bytes that are no UTF-8 are decoded to this sign.
       found.push({ line, reason: REASON.notText, text });
-    } else if (!fits(record, group.columns.length, delimiter)) {
+    } else if (!fits(record, group.columns.length)) {
       found.push({ line, reason: REASON.unreadable, text });
     } else {
       ordinal += 1;

@@ -3,7 +3,7 @@ import path from "node:path";
 import { Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import { textOf } from "./compression.ts";
-import { delimiterOf, fits, quoted, records } from "./records.ts";
+import { delimiterOf, quoted, records } from "./records.ts";
 import type { FileGroup } from "./source.ts";
 
 /**
@@ -26,8 +26,7 @@ async function* lines(file: string, delimiter: string, width: number): AsyncGene
   let block = "";
   for await (const record of records(textOf(file), delimiter)) {
     const cells = record.cells ?? Array.from({ length: width + 1 }, () => record.text);
-    const kept = fits(record, width, delimiter) ? cells.slice(0, width) : cells;
-    block += `${kept.map(quoted).join(delimiter)}\n`;
+    block += `${cells.map(quoted).join(delimiter)}\n`;
     if (block.length > BLOCK) {
       yield block;
       block = "";

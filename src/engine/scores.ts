@@ -2,7 +2,16 @@ import type { Plan } from "../plan/index.ts";
 import { type Engine, nano, real, whole } from "./engine.ts";
 import { quotient } from "./nano.ts";
 import { scaleOver } from "./pivot.ts";
-import { type Dialect, doubleValue, extremes, type Statement, score, totals } from "./sql/index.ts";
+import {
+  type Dialect,
+  doubleValue,
+  EACH_BUCKET,
+  extremes,
+  type Over,
+  type Statement,
+  score,
+  totals,
+} from "./sql/index.ts";
 import { doubleTables } from "./tables.ts";
 import type { ScoreTable } from "./types.ts";
 
@@ -40,10 +49,14 @@ export async function scoreTables(
   });
 }
 
-/** Cells of doubles over the analysed units, each over the smallest power of two that reaches all of them. */
-export async function unpivoted(values: readonly Statement[], engine: Engine): Promise<ScoreTable[]> {
+/** Cells of doubles over the analysed units, or the rows that `over` names, each over the smallest power of two that reaches all of them. */
+export async function unpivoted(
+  values: readonly Statement[],
+  engine: Engine,
+  over: Over = EACH_BUCKET,
+): Promise<ScoreTable[]> {
   if (values.length === 0) return [];
-  const [ends = {}] = await engine.query(extremes(values));
+  const [ends = {}] = await engine.query(extremes(values, over.from));
   const scales = values.map((_, i) =>
     ends[`least${i}`] == null
       ? 1
@@ -52,7 +65,8 @@ export async function unpivoted(values: readonly Statement[], engine: Engine): P
   return doubleTables(
     values.map((x, i) => ({ value: doubleValue(x, scales[i] ?? 1), scale: scales[i] ?? 1 })),
     engine,
+    over,
   );
 }
 
-const ratioOf = (a: bigint, b: bigint): number => (b < 0n ? quotient(-a, -b) : quotient(a, b));
+export const ratioOf = (a: bigint, b: bigint): number => (b < 0n ? quotient(-a, -b) : quotient(a, b));

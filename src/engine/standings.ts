@@ -2,7 +2,7 @@ import type { Plan } from "../plan/index.ts";
 import { count, type Engine, nano, type Row } from "./engine.ts";
 import { cellsOfGroups, type Group, groupsOfCells, groupsOfPairs, pairsOfGroups, together, without } from "./groups.ts";
 import { armsOfCells, armsOfPairs, type MeasuredMetric, type Scales, widened } from "./measuredMetric.ts";
-import { type Dialect, extremes, NOT_ANALYSED, OTHERWISE, standingCounts } from "./sql/index.ts";
+import { type Dialect, extremes, NOT_ANALYSED, type Over, otherwise, standingCounts } from "./sql/index.ts";
 import { decimalTables, jointTables, measured } from "./tables.ts";
 import type { CellTable, ChoiceCells, JointTable, OtherCells } from "./types.ts";
 
@@ -15,15 +15,23 @@ interface UnitChoice {
 const ANALYSED = 1;
 const isAnalysed = (standing: number): boolean => (standing & ANALYSED) !== 0;
 
-const UNIT_CHOICES: readonly UnitChoice[] = [
-  { choice: "other-way-in-two-variants", has: (standing) => (standing & 2) !== 0 },
-  { choice: "any-follow-up", has: (standing) => (standing & 4) !== 0 },
-  { choice: "without-first-day", has: (standing) => (standing & 9) === ANALYSED },
-];
+const FIRST_INCIDENT = 16;
+
+function unitChoicesOf({ incidents }: Plan): UnitChoice[] {
+  return [
+    { choice: "other-way-in-two-variants", has: (standing) => (standing & 2) !== 0 },
+    { choice: "any-follow-up", has: (standing) => (standing & 4) !== 0 },
+    { choice: "without-first-day", has: (standing) => (standing & 9) === ANALYSED },
+    ...incidents.map(({ name }, k): UnitChoice => {
+      const bits = ANALYSED | (FIRST_INCIDENT << k);
+      return { choice: `without-incident:${name}`, has: (standing) => (standing & bits) === ANALYSED };
+    }),
+  ];
+}
 
 /**
  * Other choices of units, one list a metric. Asked for are the sums of those units only that stand otherwise than most:
- * switched, not followed to the end, of the first day.
+ * switched, not followed to the end, of the first day, enrolled in an incident.
  */
 export async function unitChoices(
   plan: Plan,
@@ -31,12 +39,13 @@ export async function unitChoices(
   engine: Engine,
   dialect: Dialect,
 ): Promise<ChoiceCells[][]> {
-  const counts = await engine.query(standingCounts());
-  const choices = UNIT_CHOICES.filter((choice) => differs(choice, counts) && leavesArms(plan, choice, counts));
+  const incidents = plan.incidents.length;
+  const counts = await engine.query(standingCounts(incidents));
+  const choices = unitChoicesOf(plan).filter((choice) => differs(choice, counts) && leavesArms(plan, choice, counts));
   if (choices.length === 0 || metrics.length === 0) return metrics.map(() => []);
   const isBeyond = counts.some((row) => !isAnalysed(count(row, "standing")));
   const scales = await scalesWithOthers(metrics, isBeyond, engine);
-  const apart = await tablesApart(metrics, scales, engine, dialect);
+  const apart = await tablesApart(metrics, scales, otherwise(incidents), engine, dialect);
   return metrics.map((one, m) => {
     const own = scales[m] ?? { y: 1, x: 1 };
     const tables = apart[m];
@@ -115,6 +124,7 @@ interface Tables {
 async function tablesApart(
   metrics: readonly MeasuredMetric[],
   scales: readonly Scales[],
+  over: Over,
   engine: Engine,
   dialect: Dialect,
 ): Promise<Tables[]> {
@@ -122,12 +132,12 @@ async function tablesApart(
   const xs = metrics.flatMap(({ paired }, m) =>
     paired === null ? [] : [{ m, x: measured(paired.x.x, paired.x.pivot, scales[m]?.x ?? 1, [], dialect) }],
   );
-  const tables = await decimalTables([...ys, ...xs.map(({ x }) => x)], engine, OTHERWISE);
+  const tables = await decimalTables([...ys, ...xs.map(({ x }) => x)], engine, over);
   const pairs = xs.flatMap(({ m, x }, i) => {
     const [y, ofY, ofX] = [ys[m], tables[m], tables[ys.length + i]];
     return y === undefined || ofY === undefined || ofX === undefined ? [] : [{ y, x, ofY, ofX }];
   });
-  const joints = await jointTables(pairs, engine, OTHERWISE);
+  const joints = await jointTables(pairs, engine, over);
   return metrics.map((_, m) => {
     const of = tables[m];
     if (of === undefined) throw new Error(`no sums apart for metric ${m}`);

@@ -63,22 +63,35 @@ export async function decimalTables(
   engine: Engine,
   over: Over = EACH_BUCKET,
 ): Promise<CellTable[]> {
+  const tables = await groupedTables(measures, engine, over);
+  return tables.map(([first]) => present(first));
+}
+
+/** The same in every grouping: one list a value, first that by bucket. */
+export async function groupedTables(
+  measures: readonly DecimalMeasure[],
+  engine: Engine,
+  over: Over,
+): Promise<CellTable[][]> {
   const found = await someAtATime(
     measures.map((measure) => measure.value),
     (some) => engine.query(cells(some, over)),
   );
-  return measures.map((measure, i) => {
-    const { rows, at } = found[i] ?? { rows: [], at: 0 };
-    return {
-      pivot: measure.pivot,
-      scale: measure.scale,
+  return measures.map(({ pivot, scale }, i) => {
+    const { rows: all, at } = found[i] ?? { rows: [], at: 0 };
+    return byGrouping(all, over).map((rows) => ({
+      pivot,
+      scale,
       ...powerColumns(rows, at),
       total: rows.map((row) => nano(row, `total${at}`)),
       smallest: rows.map((row) => nano(row, `least${at}`)),
       largest: rows.map((row) => nano(row, `most${at}`)),
-    };
+    }));
   });
 }
+
+const byGrouping = (rows: readonly Row[], { others = [] }: Over): Row[][] =>
+  Array.from({ length: 1 + others.length }, (_, g) => rows.filter((row) => count(row, "grouping") === g));
 
 /** Of doubles measured against 0. */
 export async function doubleTables(
@@ -109,39 +122,71 @@ export interface MeasuredPair {
   readonly ofX: CellTable;
 }
 
-/** What the cells of y and of x say already is taken from them: new are the products, and y over the units that have x. */
+/** The same with their cells in every grouping. */
+export interface GroupedPair extends Omit<MeasuredPair, "ofY" | "ofX"> {
+  readonly ofY: readonly CellTable[];
+  readonly ofX: readonly CellTable[];
+}
+
 export async function jointTables(
   pairs: readonly MeasuredPair[],
   engine: Engine,
   over: Over = EACH_BUCKET,
 ): Promise<JointTable[]> {
-  const asked = pairs.map(({ y, x, ofY, ofX }) => ({ y: y.value, x: x.value, isPartial: sum(ofY.n) !== sum(ofX.n) }));
+  const grouped = pairs.map((pair) => ({ ...pair, ofY: [pair.ofY], ofX: [pair.ofX] }));
+  const tables = await groupedJointTables(grouped, engine, over);
+  return tables.map(([first]) => present(first));
+}
+
+/** What the cells of y and of x say already is taken from them: new are the products, and y over the units that have x. */
+export async function groupedJointTables(
+  pairs: readonly GroupedPair[],
+  engine: Engine,
+  over: Over,
+): Promise<JointTable[][]> {
+  const asked = pairs.map(({ y, x, ofY: [ofY], ofX: [ofX] }) => ({
+    y: y.value,
+    x: x.value,
+    isPartial: sum(present(ofY).n) !== sum(present(ofX).n),
+  }));
   const found = await someAtATime(asked, (some) => engine.query(jointCells(some, over)));
-  return pairs.map(({ y, x, ofY, ofX }, i) => {
+  return pairs.map((pair, i) => {
     const { rows, at } = found[i] ?? { rows: [], at: 0 };
-    const [rowOfY, rowOfX] = [finder(ofY), finder(ofX)];
     const isPartial = asked[i]?.isPartial ?? false;
-    const inY = (own: string, column: readonly bigint[]) =>
-      rows.map((row) => (isPartial ? whole(row, own) : part(column, rowOfY(row))));
-    const inX = (column: readonly bigint[]) => rows.map((row) => part(column, rowOfX(row)));
-    return {
-      pivots: [y.pivot, x.pivot],
-      scales: [y.scale, x.scale],
-      ...groupColumns(rows, at),
-      high10: inY(`h${at}_10`, ofY.high1),
-      high01: inX(ofX.high1),
-      high20: inY(`h${at}_20`, ofY.high2),
-      high11: rows.map((row) => whole(row, `h${at}_11`)),
-      high02: inX(ofX.high2),
-      low10: inY(`l${at}_10`, ofY.low1),
-      low01: inX(ofX.low1),
-      low20: inY(`l${at}_20`, ofY.low2),
-      low11: rows.map((row) => whole(row, `l${at}_11`)),
-      low02: inX(ofX.low2),
-      totalY: rows.map((row) => (isPartial ? nano(row, `y${at}`) : part(ofY.total, rowOfY(row)))),
-      totalX: inX(ofX.total),
-    };
+    return byGrouping(rows, over).map((own, g) => {
+      const [ofY, ofX] = [present(pair.ofY[g]), present(pair.ofX[g])];
+      return jointTable({ ...pair, ofY, ofX }, own, at, isPartial);
+    });
   });
+}
+
+function jointTable(
+  { y, x, ofY, ofX }: MeasuredPair,
+  rows: readonly Row[],
+  at: number,
+  isPartial: boolean,
+): JointTable {
+  const [rowOfY, rowOfX] = [finder(ofY), finder(ofX)];
+  const inY = (own: string, column: readonly bigint[]) =>
+    rows.map((row) => (isPartial ? whole(row, own) : part(column, rowOfY(row))));
+  const inX = (column: readonly bigint[]) => rows.map((row) => part(column, rowOfX(row)));
+  return {
+    pivots: [y.pivot, x.pivot],
+    scales: [y.scale, x.scale],
+    ...groupColumns(rows, at),
+    high10: inY(`h${at}_10`, ofY.high1),
+    high01: inX(ofX.high1),
+    high20: inY(`h${at}_20`, ofY.high2),
+    high11: rows.map((row) => whole(row, `h${at}_11`)),
+    high02: inX(ofX.high2),
+    low10: inY(`l${at}_10`, ofY.low1),
+    low01: inX(ofX.low1),
+    low20: inY(`l${at}_20`, ofY.low2),
+    low11: rows.map((row) => whole(row, `l${at}_11`)),
+    low02: inX(ofX.low2),
+    totalY: rows.map((row) => (isPartial ? nano(row, `y${at}`) : part(ofY.total, rowOfY(row)))),
+    totalX: inX(ofX.total),
+  };
 }
 
 /** Where a table has the group of a row. */
@@ -158,6 +203,11 @@ function part<T>(column: readonly T[], place: number): T {
   const value = column[place];
   if (value === undefined) throw new Error(`no row ${place} in a column of ${column.length}`);
   return value;
+}
+
+function present<T>(table: T | undefined): T {
+  if (table === undefined) throw new Error("a grouping without its table");
+  return table;
 }
 
 const sum = (counts: readonly number[]): number => counts.reduce((all, n) => all + n, 0);

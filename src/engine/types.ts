@@ -3,6 +3,8 @@
  * except the rejected rows, which go to a file.
  */
 
+import type { SoundnessFacts } from "./soundnessTypes.ts";
+
 /** Counts per variant, in plan order. */
 export type ByVariant = readonly number[];
 
@@ -20,8 +22,27 @@ export interface Reduction {
   readonly facts: Facts;
   /** One a metric, in plan order. */
   readonly metrics: readonly MetricCells[];
+  /** The same over other groups of the analysed units than buckets; one a metric, in plan order. */
+  readonly groups: readonly MetricGroups[];
+  /** The account of each metric's rows, in plan order. */
+  readonly metricLedgers: readonly MetricLedger[];
   /** Rejected rows by reason, most frequent first. */
   readonly rejectReasons: readonly { readonly reason: string; readonly rows: number }[];
+}
+
+/**
+ * The lines of the row ledger, all of them, for the rows that a metric's `of` (of a ratio the numerator) matches by event and
+ * where. The last one is what the metric counted. A rejected row is on its line as far as its event and columns could be
+ * read; a record that was not cut into cells is in no metric's account.
+ */
+export interface MetricLedger {
+  readonly metric: string;
+  readonly lines: readonly {
+    readonly id: string;
+    readonly rows: number;
+    /** Exact sum of the column that the metric takes, in 10^-9, over rows that hold a number; null where it takes none. */
+    readonly sum: bigint | null;
+  }[];
 }
 
 export interface InputFile {
@@ -56,7 +77,29 @@ export interface Facts {
   readonly firstEnrolledUs: bigint | null;
   readonly lastEnrolledUs: bigint | null;
   readonly logEndUs: bigint | null;
+  /** Analysed units by the local day of their enrolment (days since 1970-01-01), days without one left out; [] without time. */
+  readonly analysedByDay: readonly { readonly day: number; readonly units: ByVariant }[];
+  /** One a subgroup column of the plan, in plan order. */
+  readonly subgroups: readonly SubgroupColumn[];
+  readonly soundness: SoundnessFacts;
+  /** Analysed units that enrolled in each incident of the plan, in its order. */
+  readonly inIncidents: readonly ByVariant[];
+  /** First and last enrolment of a unit that is counted, or will be once it is followed to the end; null without time. */
+  readonly firstKeptUs: bigint | null;
+  readonly lastKeptUs: bigint | null;
 }
+
+/** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */
+export interface SubgroupColumn {
+  readonly column: string;
+  /** The 12 largest by enrolled units, ties by text; then the rest as one; then the units whose value is missing. */
+  readonly levels: readonly { readonly level: Level; readonly enrolled: ByVariant }[];
+}
+/** A kind and not a text: a log may well have a value "other". */
+export type Level =
+  | { readonly kind: "value"; readonly text: string }
+  | { readonly kind: "rest"; readonly levels: number }
+  | { readonly kind: "missing" };
 export interface ValueCount {
   readonly value: string;
   readonly rows: number;
@@ -79,6 +122,8 @@ export interface MetricCells {
   readonly ratio: { readonly per: CellTable; readonly score: ScoreTable; readonly joint: JointTable } | null;
   /** x of the adjusted contrast, over the units that have one and a value; joint sums of (value, x) over the same. */
   readonly covariate: { readonly x: CellTable; readonly joint: JointTable } | null;
+  /** Units by the size of their value, after the cap, of a ratio the numerator's; null for a share, which has two values. */
+  readonly sizes: SizeTable | null;
   /** The same metric under other reasonable choices (METHODS 6), as far as they differ from the plan's. */
   readonly choices: readonly ChoiceCells[];
   /**
@@ -101,13 +146,49 @@ export interface KeptBuckets {
   readonly drawn: { readonly critical: number; readonly found: unknown } | null;
 }
 
+/** One metric's cells by what divides the analysed units. Quantiles have none. */
+export interface MetricGroups {
+  readonly metric: string;
+  /** By the local day of enrolment, as days since 1970-01-01; null without time. */
+  readonly byDay: GroupCells | null;
+  /** One a subgroup column of the plan; the group is the place of the level in `Facts.subgroups`. */
+  readonly byLevel: readonly GroupCells[];
+  /** By day since enrolment; null where a metric cannot be told day by day. */
+  readonly sinceEnrolment: SinceEnrolment | null;
+}
+
+/**
+ * A metric by day since enrolment, days of 24 hours, over the analysed units that were followed to the end, of each every
+ * day. A unit's day is the number or the sum of the day's rows, of a proportion and of `days` whether there was one; under
+ * a cap what the day adds to the unit's capped value. All are measured against 0.
+ */
+export interface SinceEnrolment {
+  /** Whole days of follow-up; the group is 0 to days - 1. */
+  readonly days: number;
+  readonly groups: GroupCells;
+  /** Sums of each unit's sum over d of (2 d - (days - 1)) y_d, in one group; null for a ratio. */
+  readonly slope: CellTable | null;
+  /**
+   * Of a ratio the same of its scores (a - R b) / mean(b), R and mean(b) of the unit's arm on that day; an arm without a
+   * ratio on some day has none.
+   */
+  readonly scores: ScoreTable | null;
+}
+
+/** Cells whose `bucket` is the group; joint sums of a ratio's two parts, or of a value and its covariate. */
+export interface GroupCells {
+  readonly of: CellTable;
+  readonly joint: JointTable | null;
+}
+
 export type OtherCells =
   | "no-cap"
   | "cap-0.99"
   | "cap-0.999"
   | "other-way-in-two-variants"
   | "any-follow-up"
-  | "without-first-day";
+  | "without-first-day"
+  | `without-incident:${string}`;
 
 /**
  * A metric under one other choice, one row an arm; log(1 + x) are doubles without an exact total. Smallest and largest are
@@ -116,6 +197,19 @@ export type OtherCells =
 export type ChoiceCells =
   | { readonly choice: OtherCells; readonly of: CellTable; readonly joint: JointTable | null }
   | { readonly choice: "log"; readonly logged: ScoreTable };
+
+/**
+ * Units per variant, sign and size of a value: columns of equal length, a row where there is a unit. Exact counts, and
+ * as many rows as the values have sizes, whatever the number of units.
+ */
+export interface SizeTable {
+  readonly variant: readonly number[];
+  /** -1, 0, 1. */
+  readonly sign: readonly number[];
+  /** 4 k + j with 2^k (1 + j / 4) <= |x| < 2^k (1 + (j + 1) / 4), j in 0..3, of the double nearest to x; null for 0. */
+  readonly quarter: readonly (number | null)[];
+  readonly units: readonly number[];
+}
 
 /** In 10^-9 of the unit of each; x is null where there is none. */
 export interface UnitEnds {

@@ -67,6 +67,24 @@ export function localDay(us: bigint, timezone: string): number {
   return Temporal.PlainDate.from("1970-01-01").until(date, { largestUnit: "days" }).days;
 }
 
+/** What the zone's clock shows at the start of an hour of the epoch: the local day, and the hour 0 to 23. */
+export function clockHours(timezone: string): (hour: number) => { readonly day: number; readonly hour: number } {
+  const steps = [
+    { fromMs: Number.NEGATIVE_INFINITY, offsetMs: FIRST.toZonedDateTimeISO(timezone).offsetNanoseconds / 1e6 },
+    ...changes(timezone).map((change) => ({
+      fromMs: change.epochMilliseconds,
+      offsetMs: change.offsetNanoseconds / 1e6,
+    })),
+  ];
+  return (hour) => {
+    const ms = hour * 3_600_000;
+    const offset = steps.findLast(({ fromMs }) => fromMs <= ms)?.offsetMs ?? 0;
+    const local = Math.floor((ms + offset) / 3_600_000);
+    const day = Math.floor(local / 24);
+    return { day, hour: local - day * 24 };
+  };
+}
+
 function changes(timezone: string): Temporal.ZonedDateTime[] {
   const found: Temporal.ZonedDateTime[] = [];
   let next = FIRST.toZonedDateTimeISO(timezone).getTimeZoneTransition("next");

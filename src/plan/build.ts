@@ -34,6 +34,7 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
     followUp: plan["follow-up"] ?? null,
     metrics: plan.metrics.map((metric, i) => builtMetric(metric, ["metrics", i], source)),
     filters: plan.filters.map((filter, i) => builtFilter(filter, ["filters", i], source)),
+    subgroups: plan.subgroups,
     decision: {
       confidence: Number(shareText(plan.decision.confidence)),
       power: Number(shareText(plan.decision.power)),
@@ -42,6 +43,24 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
       interval: plan.decision.interval,
     },
     plannedUnits: plan.planned?.units ?? null,
+    looks:
+      plan.looks === undefined
+        ? null
+        : {
+            planned: plan.looks.planned.map((share) => Number(shareText(share))),
+            at: plan.looks.at,
+            spending: plan.looks.spending,
+            reached: null,
+          },
+    incidents: plan.incidents.map(({ name, what, from, before, where }, i) => ({
+      name,
+      what: what ?? null,
+      fromUs: known(parseTime(from, timezone), "time"),
+      beforeUs: known(parseTime(before, timezone), "time"),
+      fromText: from,
+      beforeText: before,
+      where: whereTests(where, ["incidents", i, "where"], source.yaml),
+    })),
     forecast: plan.forecast === undefined ? null : { unitsPerMonth: plan.forecast["units-per-month"] },
     registered:
       plan.registered === undefined

@@ -38,20 +38,25 @@ export function columnMentions(yaml: YamlText): readonly Mention[] {
   return mentions;
 }
 
-/** The columns other than time, event and variant, each once, in the order of first mention (DESIGN 4, rule 3). */
+/**
+ * The columns other than time, event and variant, each once, in the order of first mention (DESIGN 4, rule 3). An incident
+ * changes nothing of who is counted, so what only incidents name comes last.
+ */
 export function orderedColumns(mentions: readonly Mention[]): {
   columns: readonly string[];
   numericColumns: readonly string[];
 } {
   const named = mentions.filter(({ role }) => role === null || role === "unit" || role === "event-id");
-  const columns = [...new Set(named.map(({ name }) => name))];
+  const isOfIncident = ({ path }: Mention) => path[0] === "incidents";
+  const ordered = [...named.filter((mention) => !isOfIncident(mention)), ...named.filter(isOfIncident)];
+  const columns = [...new Set(ordered.map(({ name }) => name))];
   const numeric = new Set(named.filter(({ isNumeric }) => isNumeric).map(({ name }) => name));
   return { columns, numericColumns: columns.filter((name) => numeric.has(name)) };
 }
 
 function isWhere(path: Path): boolean {
   const [section, , key, inner] = path;
-  if (section === "filters") return path.length === 3 && key === "where";
+  if (section === "filters" || section === "incidents") return path.length === 3 && key === "where";
   return section === "metrics" && path.length === 4 && (key === "of" || key === "per") && inner === "where";
 }
 

@@ -31,6 +31,11 @@ export const shareBetween0And1 = (description: string) =>
     .union([z.number().gt(0).lt(1), percentage((share) => share > 0 && share < 1)])
     .meta({ description, expected: "a number between 0 and 1" });
 
+export const shareOfWhole = (description: string) =>
+  z
+    .union([z.number().gt(0).lte(1), percentage((share) => share > 0 && share <= 1)])
+    .meta({ description, expected: "a share above 0 and up to 1, such as 0.5 or 50%" });
+
 /** Exactly one of two keys. */
 export const eitherOf =
   <K extends string>(one: K, other: K) =>

@@ -1,5 +1,16 @@
 import { z } from "zod";
-import { amount, column, days, eitherOf, moment, percentage, shareBetween0And1, text, where } from "./schema-values.ts";
+import {
+  amount,
+  column,
+  days,
+  eitherOf,
+  moment,
+  percentage,
+  shareBetween0And1,
+  shareOfWhole,
+  text,
+  where,
+} from "./schema-values.ts";
 import { SEAL } from "./seal.ts";
 
 /**
@@ -100,6 +111,29 @@ const filter = z.strictObject({
     .optional(),
 });
 
+const incident = z.strictObject({
+  name: text("The incident's name, as the reader will see it."),
+  from: moment("It counts from here on."),
+  before: moment("It counts up to here, this moment not included."),
+  where: where.optional(),
+  what: text("What happened, in one sentence for the reader.").optional(),
+});
+
+const looks = z.strictObject({
+  planned: z.array(shareOfWhole("A share of the planned size.")).min(2).max(10).meta({
+    description: "When to look: shares of the planned size, rising, the last 1.",
+    expected: "a list of 2 to 10 shares of the planned size, such as [0.25, 0.5, 0.75, 1]",
+  }),
+  at: z.int().gt(0).meta({
+    description: "Which of the planned looks this one is, from 1.",
+    expected: "a whole number above 0",
+  }),
+  spending: z
+    .enum(["obrien-fleming", "pocock"])
+    .meta({ description: "How the looks share what may go wrong: little early on, or evenly." })
+    .default("obrien-fleming"),
+});
+
 const variant = z.strictObject({
   name: text("The variant's name, as the log has it."),
   what: text("What it is, in one sentence for the reader.").optional(),
@@ -149,10 +183,18 @@ export const planSchema = z
       .optional(),
     metrics: z.array(metric).min(1).meta({ description: "At least one primary." }),
     filters: z.array(filter).meta({ description: "Units or rows that do not count, in this order." }).default([]),
+    incidents: z
+      .array(incident)
+      .max(20)
+      .meta({
+        description: "What happened while units enrolled; one of the other choices leaves out those enrolled then.",
+        expected: "a list of at most 20 incidents, each with a dash",
+      })
+      .default([]),
     subgroups: z
       .array(text("A column of the log."))
       .meta({ description: "Columns whose value at enrolment divides the units." })
-      .optional(),
+      .default([]),
     decision: z
       .strictObject({
         confidence: shareBetween0And1("The confidence of the intervals.").default(0.95),
@@ -175,6 +217,7 @@ export const planSchema = z
       })
       .meta({ description: "What the sizing asked for." })
       .optional(),
+    looks: looks.meta({ description: "Interim looks, planned before the test started." }).optional(),
     forecast: z
       .strictObject({
         "units-per-month": z.int().gt(0).meta({

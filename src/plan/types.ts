@@ -19,8 +19,14 @@ export interface Plan {
   readonly followUp: { readonly days: number; readonly incomplete: "exclude" | "keep" } | null;
   readonly metrics: readonly Metric[];
   readonly filters: readonly Filter[];
+  /** Columns whose value on its enrolling row divides the units; in plan order, each once. */
+  readonly subgroups: readonly string[];
   readonly decision: Decision;
   readonly plannedUnits: number | null;
+  /** Null: one analysis, at the end. */
+  readonly looks: Looks | null;
+  /** In plan order; without effect on who is counted. */
+  readonly incidents: readonly Incident[];
   /** How many units are expected to enrol in a month, all variants together. */
   readonly forecast: { readonly unitsPerMonth: number } | null;
   /** Where the rule was kept before the start, and its fingerprint (seal.ts). */
@@ -28,7 +34,8 @@ export interface Plan {
   readonly texts: PlanTexts;
   /**
    * Every column of the log that the plan names, other than as time, event or variant, in the order of first mention
-   * in the YAML text (unit and event-id columns among them). It ends the canonical order of rows (DESIGN 4, rule 3).
+   * in the YAML text (unit and event-id columns among them), those that only incidents name last. It ends the canonical
+   * order of rows (DESIGN 4, rule 3).
    */
   readonly columns: readonly string[];
   /** Of these, the ones whose values must be numbers: summed, or taken max, min, first or last of, or adjusted for. */
@@ -147,6 +154,32 @@ export interface Decision {
   readonly primaries: "all" | "any";
   /** Which interval decides where several could. */
   readonly interval: "normal" | "skew-corrected";
+}
+
+/** Interim looks that the plan states beforehand. */
+export interface Looks {
+  /** Shares of the planned size, rising, the last 1. */
+  readonly planned: readonly number[];
+  /** Which of them this analysis is, from 1. */
+  readonly at: number;
+  readonly spending: "obrien-fleming" | "pocock";
+  /** Analysed of planned units, where the plan states a size and the log was read; the plan alone does not know it. */
+  readonly reached: number | null;
+}
+
+/** Something that happened while units enrolled: one other choice leaves out those enrolled then and there. */
+export interface Incident {
+  readonly name: string;
+  /** What happened, for the reader. */
+  readonly what: string | null;
+  /** Microseconds since the epoch; from is inclusive, before exclusive. */
+  readonly fromUs: bigint;
+  readonly beforeUs: bigint;
+  /** As written in the plan. */
+  readonly fromText: string;
+  readonly beforeText: string;
+  /** Asked of the enrolling row. */
+  readonly where: Where;
 }
 
 /** Text for the reader, without effect on any number. */

@@ -1,9 +1,11 @@
 import type { ChoiceName } from "../decision/index.ts";
 import type { Metric, Plan } from "../plan/types.ts";
+import { quoted } from "../words/index.ts";
 
 /** A choice in words, as one reads it in a list: "no cap", "without visitors enrolled on the first day". */
 export function choiceText(choice: ChoiceName, metric: Metric, plan: Plan): string {
   const { one, many } = plan.unitCalled;
+  if (isIncident(choice)) return `without ${many} enrolled during ${quoted(choice.slice(INCIDENT.length))}`;
   switch (choice) {
     case "as-planned":
       return "as planned";
@@ -45,6 +47,12 @@ export function choiceText(choice: ChoiceName, metric: Metric, plan: Plan): stri
   }
 }
 
+const INCIDENT = "without-incident:";
+
+function isIncident(choice: ChoiceName): choice is ChoiceName & `without-incident:${string}` {
+  return choice.startsWith(INCIDENT);
+}
+
 /** Choices that a reader would look for, and that are not listed: they would change nothing, or leave nothing. */
 export function unchanged(metric: Metric, plan: Plan, listed: readonly ChoiceName[]): ChoiceName[] {
   const hasCaps = metric.summary === "mean" || metric.summary === "ratio-of-totals";
@@ -57,6 +65,7 @@ export function unchanged(metric: Metric, plan: Plan, listed: readonly ChoiceNam
     ["other-way-in-two-variants", true],
     ["any-follow-up", plan.followUp?.incomplete === "exclude"],
     ["without-first-day", hasTime],
+    ...plan.incidents.map(({ name }) => [`without-incident:${name}`, true] as const),
   ];
   return looked.flatMap(([choice, isFit]) => (isFit && !listed.includes(choice) ? [choice] : []));
 }

@@ -14,7 +14,9 @@ import {
   alike,
   type Interval,
   MINUS,
+  pCell,
   percent,
+  plain,
   rates,
   type Scale,
   signedEstimate,
@@ -173,3 +175,11 @@ const VERDICTS: Readonly<Record<Zone, (amount: string) => string>> = {
   within: (amount) => `within ${amount}`,
   beyond: (amount) => `beyond ${amount}`,
 };
+
+/** A figure in a table of the numbers behind a picture; a p is told as everywhere else. */
+export function sixDigits(figure: number | null): string {
+  return figure === null ? NONE : plain(Number(figure.toPrecision(6)));
+}
+export function pOrNone(p: number | null): string {
+  return p === null ? NONE : pCell(p);
+}

@@ -44,10 +44,11 @@ export async function openFolder(
 ): Promise<ReportFolder | { readonly refused: string }> {
   const shown = out ?? path.join("out", folderName(experiment));
   const folder = path.resolve(shown);
-  const lying = await reportIn(folder);
-  if (lying !== null && lying.experiment !== experiment) {
+  const lying = await lyingIn(path.join(folder, "report.json"));
+  const owner = lying ?? (await lyingIn(path.join(folder, "check.json")));
+  if (owner !== null && owner.experiment !== experiment) {
     return {
-      refused: `${shown} holds the report of another experiment, "${lying.experiment}". Nothing was computed and no file was written. Name another folder with --out.`,
+      refused: `${shown} holds the report of another experiment, "${owner.experiment}". Nothing was computed and no file was written. Name another folder with --out.`,
     };
   }
   await mkdir(path.dirname(folder), { recursive: true });
@@ -90,9 +91,9 @@ export function folderName(experiment: string): string {
   return name === "" ? "experiment" : name;
 }
 
-async function reportIn(folder: string): Promise<{ readonly experiment: string; readonly text: string } | null> {
+async function lyingIn(file: string): Promise<{ readonly experiment: string; readonly text: string } | null> {
   try {
-    const text = await readFile(path.join(folder, "report.json"), "utf8");
+    const text = await readFile(file, "utf8");
     const { experiment } = JSON.parse(text) as { experiment?: unknown };
     return typeof experiment === "string" ? { experiment, text } : null;
   } catch {

@@ -1,4 +1,5 @@
 import { effectsCsv } from "./csv.ts";
+import { extraFiles } from "./extras.ts";
 import { reportJson } from "./json.ts";
 import { page } from "./page.ts";
 import { renderPage } from "./render.ts";
@@ -25,16 +26,19 @@ export type { ReportFile, ReportFiles, ReportInputs, ReportJson, TerminalPaths }
 /** The report's files as text, and its text for a terminal. Writes nothing: whoever calls it owns the folder. */
 export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {
   const json = reportJson(inputs);
-  const html = renderPage(await page(inputs, json.changes));
+  const whole = await page(inputs, json.changes);
+  const html = renderPage(whole);
+  const jsonText = `${JSON.stringify(json, null, 2)}\n`;
   return {
     json,
     html,
     files: [
       { name: "report.html", text: html },
-      { name: "report.json", text: `${JSON.stringify(json, null, 2)}\n` },
+      { name: "report.json", text: jsonText },
       { name: "effects.csv", text: effectsCsv(json.effects) },
       { name: "summary.md", text: summaryMd(inputs, json.changes) },
     ],
+    extras: () => extraFiles(inputs, whole, jsonText),
     terminal: (paths) => terminalText(inputs, paths, json.changes),
   };
 }

@@ -1,12 +1,12 @@
 import type { Check } from "../checks/types.ts";
 import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
-import type { ByVariant } from "../engine/types.ts";
-import type { Plan } from "../plan/types.ts";
 import type { Contrast } from "../stats/types.ts";
 import { changesJson } from "./changes/changes.ts";
 import { twelveDigits } from "./digits.ts";
-import { rowLine, unitLine } from "./ledger.ts";
-import type { CheckJson, EffectJson, FlowJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
+import { flowJson } from "./flow.ts";
+import { accrualJson, sinceEnrolmentJson, subgroupJson } from "./groups-json.ts";
+import { provenanceJson } from "./provenance.ts";
+import type { CheckJson, EffectJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
 export function reportJson(inputs: ReportInputs): ReportJson {
@@ -20,53 +20,21 @@ export function reportJson(inputs: ReportInputs): ReportJson {
       sentence: conclusion.sentence,
       reasons: conclusion.reasons,
     },
-    flow: flowJson(inputs),
+    flow: flowJson(plan, reduction),
     checks: inputs.checks.map(checkJson),
     effects: inputs.effects.map(effectJson),
-    subgroups: [],
-    accrual: [],
+    subgroups: inputs.subgroups.map((subgroup) => subgroupJson(subgroup, inputs.effects, plan)),
+    accrual: inputs.accruals.map(accrualJson),
+    sinceEnrolment: inputs.daysSince.map(sinceEnrolmentJson),
     sensitivity: inputs.choices.map(sensitivityJson),
     changes: null,
-    provenance: {
-      version: inputs.version,
-      plan: { sha256: inputs.planSha256, text: inputs.planText },
-      inputs: reduction.inputs.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
-      lists: reduction.lists.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
-      engine: { name: reduction.engine.name, version: reduction.engine.version },
-      cells: inputs.cellsSha256 ?? null,
-      fromCells: inputs.fromCells === true,
-    },
+    provenance: provenanceJson(inputs),
   };
   const rounded = twelveDigits(report);
   return rerun === undefined ? rounded : { ...rounded, changes: twelveDigits(changesJson(rerun, rounded)) };
 }
 
-function flowJson({ plan, reduction }: ReportInputs): FlowJson {
-  const analysed = reduction.unitLines.find((line) => line.id === "analysed")?.byVariant;
-  if (analysed === undefined || analysed === null) throw new Error("the unit ledger has no line analysed by variant");
-  return {
-    rowsRead: reduction.rowsRead,
-    rows: reduction.rowLines.map(({ id, rows }) => ({ id, line: rowLine(id, plan), rows })),
-    unitsSeen: reduction.unitsSeen,
-    units: reduction.unitLines.map(({ id, units, byVariant }) => ({
-      id,
-      line: unitLine(id, plan),
-      units,
-      byVariant: byVariant === null ? null : named(byVariant, plan),
-    })),
-    analysed: named(analysed, plan),
-    metrics: [],
-  };
-}
-
-function named(counts: ByVariant, { variants }: Plan): Record<string, number> {
-  if (counts.length !== variants.length) {
-    throw new Error(`the plan has ${variants.length} variants, the ledger counts ${counts.length}`);
-  }
-  return Object.fromEntries(variants.map(({ name }, i) => [name, counts[i] as number]));
-}
-
-function checkJson(check: Check): CheckJson {
+export function checkJson(check: Check): CheckJson {
   const own = {
     id: check.id,
     result: check.result,

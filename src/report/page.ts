@@ -1,23 +1,36 @@
 import type { ChangesJson } from "./changes/types.ts";
-import { controlOf, whenText } from "./plan-words.ts";
+import { namesToIsolate } from "./direction.ts";
+import { controlOf, kindText, whenText } from "./plan-words.ts";
+import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
+import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
 import { type ChangesSection, changesSection } from "./sections/changes.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
 import { type ChoicesFigure, choiceFigures } from "./sections/choices.ts";
+import { type ConsortTable, consortTable } from "./sections/consort.ts";
 import { type CountedSection, countedSection } from "./sections/counted.ts";
+import { dayParts } from "./sections/days.ts";
 import { type DecisionSection, decisionSection } from "./sections/decision.ts";
+import { type DesignSection, designSection } from "./sections/design.ts";
+import { type DistributionFigure, distributionFigures } from "./sections/distribution.ts";
+import { type FlowFigure, flowFigure } from "./sections/flow.ts";
+import { type IncidentText, incidentTexts } from "./sections/incidents.ts";
 import { type MethodsSection, methodsSection } from "./sections/methods.ts";
 import { type MetricSection, metricSections } from "./sections/metrics.ts";
 import { type PowerSection, powerSection } from "./sections/power.ts";
 import { type RerunLines, rerunLines } from "./sections/rerun.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
+import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
 import type { ReportInputs } from "./types.ts";
+import { withoutControls } from "./typeset.ts";
 
 /** All that the templates print: words and drawings, no figure is computed past this point. */
 export interface Page {
   readonly title: string;
   readonly experiment: string;
   readonly question: string;
+  /** "A randomised experiment: calendar against list." (CONSORT 1a) */
+  readonly kind: string;
   readonly when: string;
   readonly version: string;
   readonly undecidable: boolean;
@@ -29,15 +42,32 @@ export interface Page {
   readonly rerun: RerunLines | null;
   readonly changes: ChangesSection | null;
   readonly checks: ChecksSection;
+  /** The end of section 3. */
+  readonly incidents: readonly IncidentText[];
+  readonly design: DesignSection;
   readonly counted: CountedSection;
+  readonly flow: FlowFigure;
+  /** Null where the plan names nothing known before enrolment. */
+  readonly baseline: BaselineTable | null;
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly power: PowerSection;
   readonly methods: MethodsSection;
+  readonly consort: ConsortTable;
+  /** Of the plan, those that run from right to left. */
+  readonly names: readonly string[];
+  /** Of measure, as the plan calls them. */
+  readonly units: readonly string[];
+  /** By id, for the terms that link to their line in Methods: only lines that this report has. */
+  readonly terms: Readonly<Record<string, string>>;
 }
 
 /** What stands below a metric's tables. */
 export interface FurtherOnMetric {
+  readonly distribution: DistributionFigure | null;
   readonly sampling: readonly SamplingPart[];
+  readonly accrual: readonly AccrualPart[];
+  readonly days: readonly AccrualPart[];
+  readonly subgroups: readonly SubgroupPart[];
   readonly choices: readonly ChoicesFigure[];
   readonly turning: readonly TurningTable[];
 }
@@ -57,11 +87,18 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
   const { plan, reduction, checks, effects, conclusion } = inputs;
   const isDecided = conclusion.decision !== "undecidable";
   const sampling = await samplingParts(plan, effects, reduction, isDecided);
+  const accrual = await accrualParts(plan, effects, inputs.accruals, reduction);
+  const days = await dayParts(plan, effects, inputs.daysSince);
+  const subgroups = await subgroupParts(plan, effects, inputs.subgroups);
+  const distributions = await distributionFigures(plan, reduction, effects);
+  const baseline = baselineTable(plan, reduction);
+  const methods = methodsSection(inputs);
   const figures = await choiceFigures(plan, effects, inputs.choices);
   return {
     title: `${plan.experiment}: ${conclusion.sentence}`,
     experiment: plan.experiment,
     question: plan.question,
+    kind: kindText(plan),
     when: whenText(plan, reduction),
     version: inputs.version,
     undecidable: conclusion.decision === "undecidable",
@@ -72,15 +109,37 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     rerun: changes === null ? null : rerunLines(changes, plan),
     changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
+    incidents: incidentTexts(inputs),
+    design: designSection(
+      plan,
+      effects.some(({ resampled }) => resampled !== null),
+    ),
     counted: countedSection(plan, reduction),
+    baseline,
+    flow: await flowFigure(plan, reduction),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
+      distribution: distributions.get(metric.name) ?? null,
       sampling: sampling.get(metric.name) ?? [],
+      accrual: accrual.get(metric.name) ?? [],
+      days: days.get(metric.name) ?? [],
+      subgroups: subgroups.get(metric.name) ?? [],
       choices: figures.get(metric.name) ?? [],
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
     power: powerSection(plan, reduction, effects),
-    methods: methodsSection(inputs),
+    methods,
+    consort: consortTable(plan, reduction, baseline !== null),
+    units: [
+      ...new Set(
+        plan.metrics.flatMap(({ unitOfMeasure }) => (unitOfMeasure === null ? [] : [withoutControls(unitOfMeasure)])),
+      ),
+    ],
+    names: namesToIsolate([
+      plan.experiment,
+      ...[...plan.metrics, ...plan.variants, ...plan.filters].map(({ name }) => name),
+    ]),
+    terms: Object.fromEntries(methods.methods.map(({ id }) => [id, id])),
   };
 }

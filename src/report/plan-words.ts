@@ -1,7 +1,7 @@
 import { Temporal } from "temporal-polyfill";
 import type { Reduction } from "../engine/types.ts";
 import type { Metric, Part, Plan, Variant } from "../plan/types.ts";
-import { count, type Day, dateSpan, list, percentile, plain, plural } from "../words/index.ts";
+import { count, type Day, dateSpan, list, percentile, plain, plural, quoted } from "../words/index.ts";
 
 export function controlOf(plan: Plan): Variant {
   const control = plan.variants.find((variant) => variant.isControl);
@@ -10,7 +10,7 @@ export function controlOf(plan: Plan): Variant {
 }
 
 /** "2 to 15 March 2026, each visitor followed for 7 days": when counted units were enrolled, in the plan's zone. */
-export function whenText(plan: Plan, { facts }: Reduction): string {
+export function whenText(plan: Plan, { facts }: Pick<Reduction, "facts">): string {
   const parts: string[] = [];
   if (facts.firstEnrolledUs !== null && facts.lastEnrolledUs !== null) {
     parts.push(dateSpan(dayOf(facts.firstEnrolledUs, plan.timezone), dayOf(facts.lastEnrolledUs, plan.timezone)));
@@ -20,6 +20,15 @@ export function whenText(plan: Plan, { facts }: Reduction): string {
   }
   return parts.join(", ");
 }
+
+/** What the experiment is, and what it compares; of many variants only how many. */
+export function kindText(plan: Plan): string {
+  const others = plan.variants.filter(({ isControl }) => !isControl).map(({ name }) => quoted(name));
+  const compared = others.length <= MOST_NAMED ? list(others) : `${others.length} variants`;
+  return `A randomised experiment: ${compared} against ${quoted(controlOf(plan).name)}.`;
+}
+
+const MOST_NAMED = 3;
 
 export function dayOf(us: bigint, timezone: string): Day {
   const milliseconds = Number(us / 1000n - (us % 1000n < 0n ? 1n : 0n));

@@ -5,10 +5,10 @@ const outcome = z.enum(["pass", "caution", "fail"]);
 const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
 );
-const count = z.number().min(0);
+export const count = z.number().min(0);
 const tail = z.number().min(0).max(1);
 const byVariant = z.record(z.string(), count);
-const numberOrNull = z.number().nullable();
+export const numberOrNull = z.number().nullable();
 const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
 
 const arm = z.strictObject({
@@ -77,7 +77,74 @@ const effect = z.strictObject({
     .describe("How good the normal approximation is for the contrast that decides."),
 });
 
-const check = z
+const subgroup = z
+  .strictObject({
+    column: z.string(),
+    metric: z.string(),
+    variant: z.string(),
+    levels: z.array(
+      z.strictObject({
+        level: z.string().nullable().describe("The value on the enrolling row; null for rest and missing."),
+        kind: z.enum(["value", "rest", "missing"]),
+        units: count.describe("Of both arms, with a value of the metric."),
+        difference,
+        relative,
+        standing: z.enum(["too-few", "against", "not-against"]),
+        sentence: z.string(),
+      }),
+    ),
+    heterogeneity: z.strictObject({ q: z.number(), df: count, p: tail }).nullable().describe("Cochran's Q."),
+  })
+  .describe("One effect by the levels of a column; low and high pointwise, pAdjusted over all levels.");
+
+const accrual = z
+  .strictObject({
+    metric: z.string(),
+    variant: z.string(),
+    band: z
+      .strictObject({ units: z.number(), planned: z.boolean() })
+      .describe("Where the band is narrowest, and whether that is the plan's number of units."),
+    days: z.array(
+      z.strictObject({
+        day: z.string().describe("Local, YYYY-MM-DD; with all units enrolled up to it."),
+        units: count,
+        estimate: numberOrNull,
+        low: numberOrNull,
+        high: numberOrNull,
+        bandLow: numberOrNull,
+        bandHigh: numberOrNull,
+      }),
+    ),
+  })
+  .describe("The effect as units enrolled: low and high of that day alone, the band on all days at once.");
+
+const sinceEnrolment = z
+  .strictObject({
+    metric: z.string(),
+    variant: z.string(),
+    units: count.describe("Of both arms, followed to the end."),
+    days: z.array(
+      z.strictObject({
+        day: count.describe("0 is the first day of 24 hours after enrolment."),
+        estimate: numberOrNull,
+        low: numberOrNull,
+        high: numberOrNull,
+        p: numberOrNull,
+      }),
+    ),
+    trend: z
+      .strictObject({
+        estimate: numberOrNull,
+        standardError: numberOrNull,
+        low: numberOrNull,
+        high: numberOrNull,
+        p: numberOrNull,
+      })
+      .describe("Change of the difference from one day to the next."),
+  })
+  .describe("One effect by day since enrolment, unadjusted and pointwise.");
+
+export const checkSchema = z
   .object({
     id: z.string(),
     result: outcome,
@@ -91,6 +158,36 @@ const check = z
 
 const file = z.strictObject({ name: z.string(), bytes: count, sha256: fingerprint, rows: count });
 
+export const flowSchema = z.strictObject({
+  rowsRead: count,
+  rows: z
+    .array(z.strictObject({ id: z.string(), line: z.string(), rows: count }))
+    .describe("The rows add up to rowsRead."),
+  unitsSeen: count,
+  units: z
+    .array(z.strictObject({ id: z.string(), line: z.string(), units: count, byVariant: byVariant.nullable() }))
+    .describe("The units add up to unitsSeen."),
+  analysed: byVariant,
+  metrics: z
+    .array(
+      z.strictObject({
+        metric: z.string(),
+        lines: z.array(z.strictObject({ id: z.string(), line: z.string(), rows: count, sum: numberOrNull })),
+      }),
+    )
+    .describe(
+      "The rows that each metric's event and where match (a ratio's numerator), by the same lines; sum is of the metric's column, null without one. The last line is what the metric counted.",
+    ),
+});
+
+export const provenanceSchema = z.strictObject({
+  version: z.string(),
+  plan: z.strictObject({ sha256: fingerprint, text: z.string() }),
+  inputs: z.array(file),
+  lists: z.array(file),
+  engine: z.strictObject({ name: z.string(), version: z.string() }),
+});
+
 /** report.json (DESIGN 7) as a schema: keys of the contract are closed, only a check's figures are open. */
 export const reportSchema = z.strictObject({
   format: z.literal(1),
@@ -101,22 +198,12 @@ export const reportSchema = z.strictObject({
     sentence: z.string(),
     reasons: z.array(z.string()),
   }),
-  flow: z.strictObject({
-    rowsRead: count,
-    rows: z
-      .array(z.strictObject({ id: z.string(), line: z.string(), rows: count }))
-      .describe("The rows add up to rowsRead."),
-    unitsSeen: count,
-    units: z
-      .array(z.strictObject({ id: z.string(), line: z.string(), units: count, byVariant: byVariant.nullable() }))
-      .describe("The units add up to unitsSeen."),
-    analysed: byVariant,
-    metrics: z.array(z.never()),
-  }),
-  checks: z.array(check),
+  flow: flowSchema,
+  checks: z.array(checkSchema),
   effects: z.array(effect),
-  subgroups: z.array(z.never()),
-  accrual: z.array(z.never()),
+  subgroups: z.array(subgroup),
+  accrual: z.array(accrual),
+  sinceEnrolment: z.array(sinceEnrolment),
   sensitivity: z
     .array(
       z.strictObject({
@@ -124,23 +211,26 @@ export const reportSchema = z.strictObject({
         variant: z.string(),
         rows: z.array(
           z.strictObject({
-            choice: z.enum([
-              "as-planned",
-              "unadjusted",
-              "no-cap",
-              "cap-0.99",
-              "cap-0.999",
-              "without-largest",
-              "other-way-in-two-variants",
-              "any-follow-up",
-              "without-first-day",
-              "normal",
-              "welch",
-              "score",
-              "skew-corrected",
-              "bootstrap-t",
-              "randomisation",
-              "log",
+            choice: z.union([
+              z.enum([
+                "as-planned",
+                "unadjusted",
+                "no-cap",
+                "cap-0.99",
+                "cap-0.999",
+                "without-largest",
+                "other-way-in-two-variants",
+                "any-follow-up",
+                "without-first-day",
+                "normal",
+                "welch",
+                "score",
+                "skew-corrected",
+                "bootstrap-t",
+                "randomisation",
+                "log",
+              ]),
+              z.templateLiteral(["without-incident:", z.string()]),
             ]),
             estimate: numberOrNull,
             low: numberOrNull,

@@ -1,6 +1,7 @@
-import { nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
+import { lookSentences, nextSentences, untilThen, whyNotSettled } from "../decision/index.ts";
 import type { ChangesJson } from "./changes/types.ts";
 import { saidBefore, whatChanged } from "./changes/words.ts";
+import { directed, namesToIsolate } from "./direction.ts";
 import { whenText } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
 import type { ReportInputs } from "./types.ts";
@@ -20,7 +21,12 @@ export function summaryMd(inputs: ReportInputs, changes: ChangesJson | null = nu
     ...(changes === null ? [] : [`- ${plain(saidBefore(changes))} What changed: ${plain(whatChanged(changes, plan))}`]),
     ...answers(inputs).map(({ question, answer }) => `- ${question} ${plain(answer)}`),
   ];
-  return `${lines.join("\n")}\n`;
+  const names = namesToIsolate([
+    plan.experiment,
+    ...plan.metrics.map(({ name }) => name),
+    ...plan.variants.map(({ name }) => name),
+  ]);
+  return `${lines.map((line) => directed(line, names)).join("\n")}\n`;
 }
 
 /** What was found, and what it amounts to or what to do until it is settled; of many the first. */
@@ -31,7 +37,11 @@ function sentences(inputs: ReportInputs): string[] {
     conclusion.decision === "not-settled"
       ? [whyNotSettled(plan, reduction), untilThen(plan)]
       : nextSentences(plan, effects, conclusion, reduction).slice(0, 2);
-  return [...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND), ...then];
+  return [
+    ...(found.length === 0 ? conclusion.reasons : found).slice(0, MOST_FOUND),
+    ...lookSentences(plan, conclusion),
+    ...then,
+  ];
 }
 
 /** Text from the plan as text: nothing in it may turn into markup where the summary is pasted. */

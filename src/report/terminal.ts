@@ -1,4 +1,4 @@
-import { covariateInWords, type Effect } from "../decision/index.ts";
+import { covariateInWords, type Effect, lookSentences } from "../decision/index.ts";
 import type { Plan } from "../plan/types.ts";
 import { count, list, planPercent, plural } from "../words/index.ts";
 import type { ChangesJson } from "./changes/types.ts";
@@ -6,9 +6,8 @@ import { saidBefore, whatChanged } from "./changes/words.ts";
 import { effectText, verdictText } from "./effect-text.ts";
 import { controlOf } from "./plan-words.ts";
 import { answers, findings } from "./sections/decision.ts";
+import { labelled, printable, wrapped } from "./terminal-lines.ts";
 import type { ReportInputs, TerminalPaths } from "./types.ts";
-
-const WIDTH = 100;
 
 /** The conclusion and a short table, plain lines. Colour, if any, is the command line's. */
 export function terminalText(inputs: ReportInputs, paths: TerminalPaths, changes: ChangesJson | null = null): string {
@@ -23,7 +22,7 @@ export function terminalText(inputs: ReportInputs, paths: TerminalPaths, changes
     ...wrapped(plan.experiment),
     "",
     ...wrapped(conclusion.sentence),
-    ...findings(inputs).flatMap((sentence) => wrapped(sentence)),
+    ...[...findings(inputs), ...lookSentences(plan, conclusion)].flatMap((sentence) => wrapped(sentence)),
     "",
     ...table,
     ...(table.length === 0 || adjusted === "" ? [] : labelled("Adjusted", adjusted)),
@@ -91,23 +90,4 @@ function aligned(rows: readonly (readonly string[])[]): string[] {
       .map((cell, c) => (c === 0 || c >= columns - 2 ? cell.padEnd(widths[c] ?? 0) : cell.padStart(widths[c] ?? 0)))
       .join("   "),
   );
-}
-
-function labelled(label: string, text: string): string[] {
-  return wrapped(text, WIDTH - 9).map((line, i) => (i === 0 ? label.padEnd(9) : " ".repeat(9)) + line);
-}
-
-function wrapped(text: string, width = WIDTH): string[] {
-  const lines: string[] = [];
-  for (const word of printable(text).split(" ")) {
-    const last = lines[lines.length - 1];
-    if (last === undefined || last.length + word.length + 1 > width) lines.push(word);
-    else lines[lines.length - 1] = `${last} ${word}`;
-  }
-  return lines;
-}
-
-/** A name from the plan must not move the cursor or colour the screen: control characters become spaces. */
-function printable(text: string): string {
-  return text.replace(/[\p{Cc}\p{Cf}\u2028\u2029]+/gu, " ").replace(/ +/g, " ");
 }

@@ -1,6 +1,17 @@
 import type { Check, CheckOutcome, Figure } from "../checks/types.ts";
-import type { ChoiceName, Choices, Conclusion, DecisionWord, Effect, Zone } from "../decision/index.ts";
-import type { Reduction } from "../engine/types.ts";
+import type {
+  Accrual,
+  ChoiceName,
+  Choices,
+  Conclusion,
+  DaysSince,
+  DecisionWord,
+  Effect,
+  Subgroup,
+  SubgroupLevel,
+  Zone,
+} from "../decision/index.ts";
+import type { Level, Reduction } from "../engine/types.ts";
 import type { Plan, Role, Summary } from "../plan/types.ts";
 import type { ArmFigures, Difference, Relative } from "../stats/types.ts";
 import type { Rerun } from "./changes/changes.ts";
@@ -19,8 +30,9 @@ export interface ReportJson {
   readonly flow: FlowJson;
   readonly checks: readonly CheckJson[];
   readonly effects: readonly EffectJson[];
-  readonly subgroups: readonly never[];
-  readonly accrual: readonly never[];
+  readonly subgroups: readonly SubgroupJson[];
+  readonly accrual: readonly AccrualJson[];
+  readonly sinceEnrolment: readonly SinceEnrolmentJson[];
   readonly sensitivity: readonly SensitivityJson[];
   readonly changes: ChangesJson | null;
   readonly provenance: ProvenanceJson;
@@ -37,7 +49,16 @@ export interface FlowJson {
     readonly byVariant: Readonly<Record<string, number>> | null;
   }[];
   readonly analysed: Readonly<Record<string, number>>;
-  readonly metrics: readonly never[];
+  /** Of each metric's `of` the rows it matches, by the lines of `rows`; the last line is what it counted. */
+  readonly metrics: readonly {
+    readonly metric: string;
+    readonly lines: readonly {
+      readonly id: string;
+      readonly line: string;
+      readonly rows: number;
+      readonly sum: number | null;
+    }[];
+  }[];
 }
 
 /** The check's own figures stand beside these keys. */
@@ -54,6 +75,69 @@ export type CheckJson = {
   } & { readonly [figure: string]: Figure })[];
 } & { readonly [figure: string]: Figure };
 
+export type DifferenceJson = Difference & { readonly pAdjusted: number | null };
+
+/** One effect by the levels of a column, pointwise. */
+export interface SubgroupJson {
+  readonly column: string;
+  readonly metric: string;
+  readonly variant: string;
+  readonly levels: readonly {
+    /** The value; null for all values beyond the largest twelve (rest) and for units without one (missing). */
+    readonly level: string | null;
+    readonly kind: Level["kind"];
+    /** Of both arms. */
+    readonly units: number;
+    readonly difference: DifferenceJson;
+    readonly relative: Relative | null;
+    readonly standing: SubgroupLevel["standing"];
+    readonly sentence: string;
+  }[];
+  readonly heterogeneity: { readonly q: number; readonly df: number; readonly p: number } | null;
+}
+
+/** One effect as units enrolled, in the metric's unit; a day's row holds all enrolled up to it. */
+export interface AccrualJson {
+  readonly metric: string;
+  readonly variant: string;
+  /** The number of units at which the band is narrowest, and whether it is the plan's. */
+  readonly band: { readonly units: number; readonly planned: boolean };
+  readonly days: readonly {
+    /** Local, YYYY-MM-DD. */
+    readonly day: string;
+    readonly units: number;
+    readonly estimate: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly bandLow: number | null;
+    readonly bandHigh: number | null;
+  }[];
+}
+
+/** One effect by day since enrolment, in the metric's unit, unadjusted and pointwise. */
+export interface SinceEnrolmentJson {
+  readonly metric: string;
+  readonly variant: string;
+  /** Of both arms, followed to the end. */
+  readonly units: number;
+  readonly days: readonly {
+    /** 0 is the first day of 24 hours after enrolment. */
+    readonly day: number;
+    readonly estimate: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly p: number | null;
+  }[];
+  /** Change of the difference from one day to the next. */
+  readonly trend: {
+    readonly estimate: number | null;
+    readonly standardError: number | null;
+    readonly low: number | null;
+    readonly high: number | null;
+    readonly p: number | null;
+  };
+}
+
 export interface EffectJson {
   readonly metric: string;
   readonly role: Role;
@@ -61,7 +145,7 @@ export interface EffectJson {
   readonly variant: string;
   readonly control: string;
   readonly arms: { readonly control: ArmFigures; readonly variant: ArmFigures };
-  readonly difference: Omit<Difference, "method"> & { readonly pAdjusted: number | null; readonly method: string };
+  readonly difference: DifferenceJson;
   readonly relative: Relative | null;
   /** Where not null, its difference decides. */
   readonly adjusted: {
@@ -138,6 +222,10 @@ export interface ReportInputs {
   readonly effects: readonly Effect[];
   /** One an effect, in their order. */
   readonly choices: readonly Choices[];
+  /** Of every effect that has one, in their order. */
+  readonly accruals: readonly Accrual[];
+  readonly daysSince: readonly DaysSince[];
+  readonly subgroups: readonly Subgroup[];
   readonly conclusion: Conclusion;
   /** The log was not read: the figures are of cells that an earlier report had kept. */
   readonly fromCells?: boolean | undefined;
@@ -152,11 +240,18 @@ export interface ReportFiles {
   readonly html: string;
   /** What is written into the report's folder. */
   readonly files: readonly ReportFile[];
+  /** Made only when they are asked for: every figure as a file, page one alone, one line for a log of decisions. */
+  readonly extras: () => readonly ExtraFile[];
   /** The conclusion and a short table for stdout, plain lines without colour. */
   readonly terminal: (paths: TerminalPaths) => string;
 }
 export interface ReportFile {
   readonly name: "report.html" | "report.json" | "effects.csv" | "summary.md" | "cells.json";
+  readonly text: string;
+}
+/** `figures/….svg`, `page-one.html`, `decision.csv`. */
+export interface ExtraFile {
+  readonly name: string;
   readonly text: string;
 }
 /** Where the reader finds the files, as the terminal is to print it. */

@@ -1,3 +1,4 @@
+import { directed } from "./direction.ts";
 import type { Page } from "./page.ts";
 
 /**
@@ -6,21 +7,31 @@ import type { Page } from "./page.ts";
  */
 export function typeset(page: Page): Page {
   const { planText } = page.methods;
-  const all = everyText(page);
-  return { ...all, methods: { ...all.methods, planText } };
+  const names = page.names.map(withoutControls);
+  const set = everyText(page, (text) =>
+    directed(quotes(withUnits(unbroken(withoutControls(text)), page.units)), names),
+  ) as Page;
+  return { ...set, names: page.names, units: page.units, terms: page.terms, methods: { ...set.methods, planText } };
 }
 
-export function everyText<T>(value: T): T {
-  return set(value) as T;
+/** Of two reports compared: no measure's unit is known there, and no name to set apart. */
+export function typesetPlainly<T extends object>(page: T): T {
+  return everyText(page, (text) => quotes(unbroken(withoutControls(text)))) as T;
 }
 
-function set(value: unknown): unknown {
-  if (typeof value === "string") return quotes(unbroken(withoutControls(value)));
-  if (Array.isArray(value)) return value.map(set);
+/** The same of a page that shows the plan word for word. */
+export function typesetWithPlan<P extends { readonly methods: { readonly planText: string } }>(page: P): P {
+  const set = typesetPlainly(page);
+  return { ...set, methods: { ...set.methods, planText: page.methods.planText } };
+}
+
+function everyText(value: unknown, set: (text: string) => string): unknown {
+  if (typeof value === "string") return set(value);
+  if (Array.isArray(value)) return value.map((item) => everyText(item, set));
   if (typeof value !== "object" || value === null) return value;
   // a drawing is markup of our own, not a text
   if ("svg" in value) return value;
-  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, set(item)]));
+  return Object.fromEntries(Object.entries(value).map(([key, item]) => [key, everyText(item, set)]));
 }
 
 /**
@@ -37,4 +48,12 @@ export function quotes(text: string): string {
 
 export function unbroken(text: string): string {
   return text.replace(/\bp ([<=]) (?=\d)/g, "p\u00a0$1\u00a0").replace(/(\d%) (?=intervals?\b)/g, "$1\u00a0");
+}
+
+/** A figure and its unit of measure stay on one line: "0.018 s". */
+export function withUnits(text: string, units: readonly string[]): string {
+  return units.reduce((set, unit) => {
+    const escaped = unit.replace(/[.*+?^${}()|[\]\\]/g, "\\$&");
+    return set.replace(new RegExp(`(\\d) (?=${escaped}(?![\\p{L}\\p{Nd}]))`, "gu"), "$1\u00a0");
+  }, text);
 }

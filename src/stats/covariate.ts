@@ -1,4 +1,4 @@
-import { type Fraction, fraction, NANO, nearestNumber } from "../cells/index.ts";
+import { exactly, type Fraction, fraction, NANO, nearestNumber } from "../cells/index.ts";
 import type { CovariateArm, PowerSums } from "../cells/types.ts";
 import { type Bounded, centreOf, ONE, type SecondMoments, secondMoments } from "./covariate-moments.ts";
 import type { Absent, Level } from "./types.ts";
@@ -68,6 +68,39 @@ export function adjusted(control: CovariateArm, variant: CovariateArm): Adjusted
   };
 }
 
+/** What a contrast was adjusted by: the slope, and the centre of x over its whole arms. */
+export interface AdjustedBy {
+  readonly theta: number;
+  readonly whole: { readonly control: CovariateArm; readonly variant: CovariateArm };
+}
+
+/**
+ * The level of some of an arm's units by the slope and the centre of the whole contrast: what the units of a level or of the
+ * first days give to it.
+ *
+ *   level = mean(y) - theta (mean(x) - X)    v = (var(y) - 2 theta cov + theta^2 var(x)) / n,   x missing at X
+ * @param part by the pivots and scales of the whole arms
+ * @returns `no-units`; v absent as `few-units` for one unit, `lost-digits` where y is theta x but for rounding
+ */
+export function adjustedPart(part: CovariateArm, { theta, whole }: AdjustedBy): Level | Absent {
+  haveOneMeasure(part, whole.control);
+  const { value, covariate } = part;
+  if (value.n === 0) return { absent: "no-units" };
+  const centre = centreOf([whole.control, whole.variant]);
+  const m = secondMoments(part, centre);
+  const [y, x, by] = [powerOfTwo(value.scale), powerOfTwo(covariate.scale), exactly(theta)];
+  const slope = fraction(
+    by.numerator * x.numerator * y.denominator,
+    by.denominator * x.denominator * y.numerator * centre.count,
+  );
+  const isConstant = m.yy.value === 0n && m.xx.value === 0n;
+  const left = value.n < 2 ? null : isConstant ? 0n : residual(m, slope);
+  const exact = meanOf(value, m, slope, y);
+  const variance: Level["variance"] =
+    left === null ? { absent: value.n < 2 ? "few-units" : "lost-digits" } : varianceOf(m, slope, left, y);
+  return { n: value.n, exact, value: nearestNumber(exact), variance };
+}
+
 /** theta in the units of the sums: (xy_c / d_c + xy_t / d_t) / (xx_c / d_c + xx_t / d_t), d = n^2 (n - 1). Null without spread. */
 function slopeOf(c: SecondMoments, t: SecondMoments): Fraction | null {
   const [perControl, perVariant] = [c.n * c.n * (c.n - 1n), t.n * t.n * (t.n - 1n)];
@@ -87,15 +120,20 @@ function residual({ yy, xy, xx }: SecondMoments, { numerator, denominator }: Fra
 }
 
 function levelOf(value: PowerSums, m: SecondMoments, slope: Fraction, left: bigint, scale: Fraction): Level {
+  const exact = meanOf(value, m, slope, scale);
+  return { n: value.n, exact, value: nearestNumber(exact), variance: varianceOf(m, slope, left, scale) };
+}
+
+function meanOf(value: PowerSums, m: SecondMoments, slope: Fraction, scale: Fraction): Fraction {
   if (value.total === null) throw new Error("a mean came without its exact total");
   // mean(y) - slope (off / n) scale 2^-120, over one denominator
   const down = slope.denominator * scale.denominator * ONE;
-  const exact = fraction(value.total * down - slope.numerator * m.off * scale.numerator * NANO, m.n * NANO * down);
-  const variance = fraction(
-    left * scale.numerator ** 2n,
-    m.n * m.n * (m.n - 1n) * (slope.denominator * scale.denominator * ONE) ** 2n,
-  );
-  return { n: value.n, exact, value: nearestNumber(exact), variance: nearestNumber(variance) };
+  return fraction(value.total * down - slope.numerator * m.off * scale.numerator * NANO, m.n * NANO * down);
+}
+
+function varianceOf(m: SecondMoments, slope: Fraction, left: bigint, scale: Fraction): number {
+  const down = m.n * m.n * (m.n - 1n) * (slope.denominator * scale.denominator * ONE) ** 2n;
+  return nearestNumber(fraction(left * scale.numerator ** 2n, down));
 }
 
 /** X from the exact totals. */

@@ -9,6 +9,8 @@ export { armOfLevel, shapedAs } from "./arm-of-level.ts";
 export { armsAlike } from "./arms-alike.ts";
 // Covariates
 export { type Balance, balance } from "./balance.ts";
+// Time and subgroups
+export { type BandFor, bandCritical } from "./band.ts";
 // More than one question
 export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
@@ -16,17 +18,20 @@ export type { BootstrapT } from "./bootstrap-t.ts";
 export type { BucketCells } from "./bucket-cells.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
 export { type Alike, contrast, contrastBy } from "./contrast.ts";
-export { type Adjusted, adjusted } from "./covariate.ts";
+export { type Adjusted, type AdjustedBy, adjusted, adjustedPart } from "./covariate.ts";
 export { dunnettCritical, dunnettP } from "./dunnett.ts";
 // Power and sizes
 export { type Exaggeration, exaggeration } from "./exaggeration.ts";
 // Tests of counts
 export { fisher } from "./fisher.ts";
+export { type Heterogeneity, heterogeneity } from "./heterogeneity.ts";
 export type { Histogram } from "./histogram.ts";
 export { holm } from "./holm.ts";
 export { independence } from "./independence.ts";
 export type { LargestShare } from "./largest-share.ts";
 export { level } from "./level.ts";
+// Planned looks
+export { driftOfLooks, type Looks, lookBoundaries, lookCritical, pOfLooks } from "./looks.ts";
 // Moments
 export { type Moments, moments } from "./moments.ts";
 export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";
@@ -49,11 +54,12 @@ export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
 export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
 export { relativeByEnds } from "./relative-by-ends.ts";
 export { type Resampled, resampled } from "./resampled.ts";
-export { DRAWS, DRAWS_OF_SECONDARY, isNotDrawn, type NotDrawn } from "./resampling.ts";
+export { DRAWS, DRAWS_OF_SECONDARY, drawsReach, isNotDrawn, type NotDrawn } from "./resampling.ts";
 export { type Counts, counts } from "./share.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";
 export { type Ahead, enrolmentDays, meanVariances, type Sizing, shareVariances, sizing } from "./sizing.ts";
 export { tCritical, tTwoSided } from "./student-t.ts";
+export { tailLevel } from "./tail-level.ts";
 export { CAUTION_SHARE, type TailLevel, type TailPair, type Tails } from "./tails.ts";
 
 // Types

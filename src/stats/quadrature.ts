@@ -31,6 +31,19 @@ interface Panel {
   readonly error: number;
 }
 
+/** Kronrod's 15 points of each panel, in no order; the sum of weight times value is the integral of what is smooth. */
+export function nodesOver(points: readonly number[]): { readonly at: number; readonly weight: number }[] {
+  return points.slice(1).flatMap((to, i) => {
+    const from = points[i] ?? to;
+    const [centre, half] = [from + (to - from) / 2, (to - from) / 2];
+    return NODES.flatMap(([at, weight]) =>
+      at === 0
+        ? [{ at: centre, weight: weight * half }]
+        : [-half * at, half * at].map((offset) => ({ at: centre + offset, weight: weight * half })),
+    );
+  });
+}
+
 function panel(f: (x: number) => number, from: number, to: number): Panel {
   const [centre, half] = [from + (to - from) / 2, (to - from) / 2];
   let [kronrod, gauss] = [0, 0];

@@ -32,6 +32,11 @@ export function tooFew(
   return fewest < EVENTS_AT_LEAST ? { notDrawn: "few-events" } : null;
 }
 
+/** Whether so many draws reach the tails of an interval: an early look's boundary can lie beyond all of them. */
+export function drawsReach(alpha: number, draws: number): boolean {
+  return alpha * draws >= 4;
+}
+
 /** Whether too many of the draws had no T. */
 export function tooManyUndefined(undefinedDraws: number, draws: number): boolean {
   return undefinedDraws > UNDEFINED_OVER * draws;

@@ -1,3 +1,4 @@
+import { driftOfLooks, type Looks, lookCritical } from "./looks.ts";
 import { detectable } from "./power.ts";
 import { criticalOfSimultaneous } from "./simultaneous.ts";
 
@@ -12,10 +13,12 @@ export interface Ahead {
   /** Two-sided, for all variants together. */
   readonly alpha: number;
   readonly power: number;
+  /** Planned looks: the last boundary counts then, alpha shared out evenly over the variants. */
+  readonly looks?: Looks;
 }
 
 export interface Sizing {
-  /** The critical value: the normal's for one variant, Dunnett's for several. */
+  /** The critical value: the normal's for one variant, Dunnett's for several, with planned looks their last boundary. */
   readonly critical: number;
   /** Whole units of each arm, the control's first. */
   readonly units: readonly number[];
@@ -27,22 +30,24 @@ export interface Sizing {
  *
  *   N = max over variants i of ((c + z(power)) / distance)^2 (s_c^2 / a_c + s_i^2 / a_i),   a the shares of units
  * rounded up in each arm. Normal throughout, as the analysis of large arms is; under 200 units an arm Welch's t asks for
- * about one unit more in each.
+ * about one unit more in each. With planned looks the standard errors that one of them shows with this power take the place
+ * of c + z(power) (`driftOfLooks`): the whole size, which only a test that goes to its last look needs.
  *
  * Source: Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 2nd ed., 3.2.1 (means) and 4.2.1
  * (proportions, unpooled).
  */
-export function sizing({ variances, allocation, distance, alpha, power }: Ahead): Sizing {
+export function sizing({ variances, allocation, distance, alpha, power, looks }: Ahead): Sizing {
   if (allocation.length !== variances.length)
     throw new Error(`${allocation.length} shares for ${variances.length} arms`);
   const whole = allocation.reduce((sum, share) => sum + share, 0);
   const shares = allocation.map((share) => share / whole);
   const [control = 0, ...variants] = variances.map((variance, arm) => variance / (shares[arm] ?? 0));
-  const critical = criticalOfSimultaneous(control, variants, alpha);
-  const needed = Math.max(
-    ...variants.map((variant) => (detectable(critical, power, Math.sqrt(control + variant)) / distance) ** 2),
-  );
-  const units = shares.map((share) => Math.ceil(needed * share));
+  const own = alpha / variants.length;
+  const critical = looks === undefined ? criticalOfSimultaneous(control, variants, alpha) : lookCritical(looks, own);
+  const errors = looks === undefined ? detectable(critical, power, 1) : driftOfLooks(looks, own, power);
+  const needed = Math.max(...variants.map((variant) => (errors / distance) ** 2 * (control + variant)));
+  // One unit alone has no spread to be judged by.
+  const units = shares.map((share) => Math.max(2, Math.ceil(needed * share)));
   return { critical, units, total: units.reduce((sum, n) => sum + n, 0) };
 }
 

@@ -11,6 +11,11 @@ export function pText(p: number): string {
   return `p = ${fixed(p, crosses ? first + 2 : first).replace(/\.?0+$/, "")}`;
 }
 
+/** The same for a column that is headed p: "0.031", "< 0.0001". */
+export function pCell(p: number): string {
+  return pText(p).replace(/^p (= )?/, "");
+}
+
 /** How often chance alone does this: "in fewer than one test in a million", "in about one test in 1,300". */
 export function chanceText(p: number): string {
   if (p < 1e-6) return "in fewer than one test in a million";

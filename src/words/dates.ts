@@ -1,3 +1,5 @@
+import { list, plural } from "./nouns.ts";
+
 /** A day of the calendar; month 1 to 12. */
 export interface Day {
   readonly year: number;
@@ -36,4 +38,25 @@ function dayAndMonth({ month, day }: Day): string {
   const name = MONTHS[month - 1];
   if (name === undefined) throw new Error(`a month is 1 to 12, not ${month}`);
   return `${day} ${name}`;
+}
+
+/** The calendar's day, of days since 1970-01-01. */
+export function dayOfEpoch(days: number): Day {
+  const date = new Date(days * 86_400_000);
+  return { year: date.getUTCFullYear(), month: date.getUTCMonth() + 1, day: date.getUTCDate() };
+}
+
+const SPANS_NAMED = 4;
+
+/** Days since 1970-01-01, in order, as a text: "2 to 4 March 2026 and 9 March 2026"; of many the first. */
+export function daysText(days: readonly number[]): string {
+  const spans: { first: number; last: number }[] = [];
+  for (const day of days) {
+    const span = spans.at(-1);
+    if (span !== undefined && day === span.last + 1) span.last = day;
+    else spans.push({ first: day, last: day });
+  }
+  const texts = spans.slice(0, SPANS_NAMED).map(({ first, last }) => dateSpan(dayOfEpoch(first), dayOfEpoch(last)));
+  const more = spans.slice(SPANS_NAMED).reduce((sum, { first, last }) => sum + last - first + 1, 0);
+  return list([...texts, ...(more === 0 ? [] : [plural(more, "more day", "more days")])]);
 }

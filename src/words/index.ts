@@ -1,9 +1,10 @@
 // numbers
 
 export { atLeast, casesText, spanText } from "./cases.ts";
-export { chanceText, pText } from "./chance.ts";
+export { chanceText, pCell, pText } from "./chance.ts";
 // nouns and days
-export { type Day, dateSpan, dateText } from "./dates.ts";
+export { type Day, dateSpan, dateText, dayOfEpoch, daysText } from "./dates.ts";
+export { exact } from "./exact.ts";
 // estimates with their intervals
 export {
   type Comparative,
@@ -20,7 +21,7 @@ export {
   signedEstimate,
   signedInterval,
 } from "./interval.ts";
-export { capital, list, plural, quoted } from "./nouns.ts";
+export { asSentence, capital, list, plural, quoted } from "./nouns.ts";
 export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
 export { percent, planPercent, signedPercent } from "./percent.ts";
 export { percentile } from "./percentile.ts";

@@ -21,3 +21,8 @@ export function capital(text: string): string {
   const [first = ""] = text;
   return first.toUpperCase() + text.slice(first.length);
 }
+
+/** A text from the plan as a sentence: with a full stop, unless it ends in a mark of its own. */
+export function asSentence(text: string): string {
+  return /[.!?\u2026]$/.test(text.trimEnd()) ? text : `${text.trimEnd()}.`;
+}

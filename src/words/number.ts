@@ -68,7 +68,8 @@ function decimalsOf(value: number): number {
   return Math.max(0, SIGNIFICANT - 1 - Math.floor(Math.log10(Math.abs(value))));
 }
 
-function grouped(whole: string): string {
+/** Digits before the point, thousands set apart. */
+export function grouped(whole: string): string {
   return whole.replace(/\B(?=(\d{3})+$)/g, ",");
 }
 

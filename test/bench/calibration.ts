@@ -1,4 +1,5 @@
 import { Worker } from "node:worker_threads";
+import { accrualTable } from "./accrual.ts";
 import { CASES, type Case, GATE } from "./calibration-cases.ts";
 import { emptyTally, type Misses, type Tally } from "./calibration-run.ts";
 import { type Done, RANDOMISED, type Task } from "./calibration-worker.ts";
@@ -6,7 +7,8 @@ import { type Done, RANDOMISED, type Task } from "./calibration-worker.ts";
 /**
  * How often intervals miss on each side, beside what is predicted for the plain one; and whether the randomisation test's p
  * is uniform where nothing differs. Prints a table as markdown; ends with status 1 where the corrected interval fails:
- * outside 1.9% to 3.1% in the gate's row, or further from 2.5% than the plain one by more than two standard errors anywhere.
+ * outside 1.9% to 3.1% in the gate's row, or further from 2.5% than the plain one by more than two standard errors anywhere;
+ * or where the band that holds at all times or the test of a trend does (accrual.ts).
  *
  *   npm run bench:calibration            the whole table, some minutes on two cores
  *   npm run bench:calibration -- 10      a tenth of the experiments
@@ -88,7 +90,10 @@ function print(): void {
   for (const { cells } of rows) say(`| ${cells.join(" | ")} |`);
   say("");
   for (const [at, values] of ps.entries()) say(uniform(at, values));
-  const faults = rows.flatMap(({ fault }) => (fault === null ? [] : [fault]));
+  const accrual = accrualTable(DIVISOR);
+  say("");
+  for (const line of accrual.lines) say(line);
+  const faults = [...rows.flatMap(({ fault }) => (fault === null ? [] : [fault])), ...accrual.faults];
   for (const fault of faults) say(`FAILS: ${fault}`);
   if (faults.length > 0) process.exitCode = 1;
 }

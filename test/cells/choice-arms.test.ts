@@ -25,6 +25,7 @@ function cellsOf(arms: readonly (readonly number[])[]): MetricCells {
     of: cellsOfGroups("0", 16, groups),
     ratio: null,
     covariate: null,
+    sizes: null,
     choices: [],
     ends: arms.map((values) => ({ smallest: end(Math.min(...values)), largest: end(Math.max(...values)) })),
   };

@@ -19,7 +19,7 @@ describe("a check", () => {
     expect(asCheck("x", parts.slice(0, 2), {})).toMatchObject({ result: "caution", strong: false, sentence: "b." });
   });
 
-  it("keeps its parts in their own order, without their remedies", () => {
+  it("keeps its parts in their own order, each with its remedy", () => {
     expect(asCheck("x", [caution("b", true), passed("a", "a.", { n: 1 })], { m: 2 })).toEqual({
       id: "x",
       result: "caution",
@@ -28,8 +28,8 @@ describe("a check", () => {
       remedy: "mend b",
       figures: { m: 2 },
       parts: [
-        { about: "b", result: "caution", sentence: "b.", figures: {} },
-        { about: "a", result: "pass", sentence: "a.", figures: { n: 1 } },
+        { about: "b", result: "caution", sentence: "b.", figures: {}, remedy: "mend b" },
+        { about: "a", result: "pass", sentence: "a.", figures: { n: 1 }, remedy: "" },
       ],
     });
   });

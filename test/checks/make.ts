@@ -1,3 +1,4 @@
+import type { SoundnessFacts } from "../../src/engine/soundnessTypes.ts";
 import type { Facts, MetricCells, Reduction } from "../../src/engine/types.ts";
 import type { Filter, Metric, Plan } from "../../src/plan/types.ts";
 
@@ -26,8 +27,11 @@ export function planOf(changes: Partial<Plan> = {}): Plan {
     followUp: null,
     metrics: [metricOf({ name: "Booked", role: "primary" })],
     filters: [],
+    subgroups: [],
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: null,
+    looks: null,
+    incidents: [],
     forecast: null,
     registered: null,
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },
@@ -86,7 +90,8 @@ export interface LogShape {
   readonly rejectReasons?: Reduction["rejectReasons"];
   /** Analysed units without a value, by metric. */
   readonly leftOut?: Readonly<Record<string, readonly number[]>>;
-  readonly facts?: Partial<Omit<Facts, "enrolled">>;
+  readonly facts?: Partial<Omit<Facts, "enrolled" | "soundness">>;
+  readonly soundness?: Partial<SoundnessFacts>;
 }
 
 /** A reduction whose ledgers add up as the engine's do. */
@@ -131,11 +136,36 @@ export function reductionOf(plan: Plan, shape: LogShape = {}): Reduction {
       missingVariants: [],
       firstEnrolledUs: null,
       lastEnrolledUs: null,
+      inIncidents: plan.incidents.map(() => plan.variants.map(() => 0)),
       logEndUs: null,
+      analysedByDay: [],
+      subgroups: [],
+      firstKeptUs: null,
+      lastKeptUs: null,
       ...shape.facts,
+      soundness: { ...soundnessOf(plan, enrolled), ...shape.soundness },
     },
     metrics: plan.metrics.map(({ name }) => metricCells(name, shape.leftOut?.[name] ?? none)),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
+    metricLedgers: [],
     rejectReasons: shape.rejectReasons ?? [],
+  };
+}
+
+/** Where nothing is said of days, hours or filters: no fault, and no time. */
+export function soundnessOf(plan: Plan, enrolled: readonly number[]): SoundnessFacts {
+  const rowFilters = plan.filters.filter(({ drop }) => drop === "rows");
+  const lines = ["rejected", "duplicate", ...rowFilters.map(({ name }) => `filter:${name}`)];
+  return {
+    days: null,
+    levels: [],
+    beforeLines: lines.map((id) => ({ line: id, byVariant: enrolled })),
+    enrolling: { units: enrolled, taken: rowFilters.map(() => plan.variants.map(() => 0)) },
+    byMetricRows: null,
+    keptUnfollowed: null,
+    valuesOfFilters: [],
+    sources: [],
+    silences: [],
   };
 }
 
@@ -174,6 +204,7 @@ function metricCells(metric: string, leftOut: readonly number[]): MetricCells {
     of,
     ratio: null,
     covariate: null,
+    sizes: null,
     choices: [],
     ends: [],
   };

@@ -9,7 +9,7 @@ import type { Library } from "../../src/cli/library.ts";
 import { run } from "../../src/cli/program.ts";
 import { progressText } from "../../src/cli/progress.ts";
 import type { Terminal } from "../../src/cli/terminal.ts";
-import type { CloseoutOptions, Outcome, ReportJson } from "../../src/index.ts";
+import { type BlindJson, type CloseoutOptions, type Outcome, type ReportJson, size } from "../../src/index.ts";
 
 const DONE: Outcome = {
   status: 0,
@@ -46,12 +46,47 @@ async function command(argv: string[], outcome: Outcome | Error = DONE, signal =
       status: 0,
       text: `${before} against ${after}, ${options.out ?? "here"}`,
     }),
+    check: async (plan, options = {}) => {
+      asked.push({ plan, options });
+      if (outcome instanceof Error) throw outcome;
+      return outcome.status === 0 ? { ...outcome, terminal: "A test\n\nBlind.", check: {} as BlindJson } : outcome;
+    },
+    trace: async (plan, unit, options = {}) => {
+      asked.push({ plan: `${plan} ${unit}`, options });
+      if (outcome instanceof Error) throw outcome;
+      return outcome.status === 0 ? { status: 0, terminal: "Visitor" } : outcome;
+    },
+    blindJsonSchema: () => ({ title: "check" }),
     planJsonSchema: () => ({ title: "plan" }),
     reportJsonSchema: () => ({ title: "report" }),
+    size,
   };
   const status = await run(argv, { terminal, load: async () => library, signal, version: "1.2.3" });
   return { status, stdout: stdout.join("\n"), stderr: stderr.join("\n"), asked };
 }
+
+describe("closeout check", () => {
+  it("hands the plan and the options to the library and prints what it says", async () => {
+    const { status, stdout, stderr, asked } = await command(["check", "a.yaml", "--out", "x", "--threads", "2"]);
+    expect([status, stdout, stderr]).toEqual([0, "A test\n\nBlind.", ""]);
+    expect(asked[0]).toMatchObject({ plan: "a.yaml", options: { out: "x", threads: 2 } });
+  });
+  it("says what is wrong on stderr, with its status", async () => {
+    const { status, stdout, stderr } = await command(["check", "a.yaml"], { status: 3, text: "The log is empty." });
+    expect([status, stdout, stderr]).toEqual([3, "", "The log is empty."]);
+  });
+});
+
+describe("closeout trace", () => {
+  it("hands the plan, the unit and the options to the library and prints what it says", async () => {
+    const { status, stdout, stderr, asked } = await command(["trace", "a.yaml", "--unit", "v 1", "--threads", "2"]);
+    expect([status, stdout, stderr]).toEqual([0, "Visitor", ""]);
+    expect(asked).toMatchObject([{ plan: "a.yaml v 1", options: { threads: 2 } }]);
+  });
+  it("takes an id that begins with a hyphen", async () => {
+    expect((await command(["trace", "a.yaml", "--unit=-7"])).asked).toMatchObject([{ plan: "a.yaml -7" }]);
+  });
+});
 
 describe("closeout report", () => {
   it("hands the plan and the options to the library and prints what it says", async () => {
@@ -67,6 +102,11 @@ describe("closeout report", () => {
     ]);
     expect([status, stdout, stderr]).toEqual([0, "A test\n\nAdopt it.", ""]);
     expect(asked[0]).toMatchObject({ plan: "a.yaml", options: { out: "x", threads: 2, memory: "4GB" } });
+  });
+
+  it("asks for the figures as files only when told to", async () => {
+    const { asked } = await command(["report", "a.yaml", "--figures"]);
+    expect(asked[0]?.options).toMatchObject({ figures: true });
   });
 
   it("leaves to the library what was not given", async () => {
@@ -110,7 +150,10 @@ describe("wrong arguments", () => {
   it.each([
     [["reprot", "a.yaml"], 'closeout has no command "reprot". Did you mean report?'],
     [["plan.yaml"], 'closeout has no command "plan.yaml". Did you mean closeout report plan.yaml?'],
-    [["check", "a.yaml"], 'closeout has no command "check".\n'],
+    [["trace", "a.yaml"], "closeout trace needs --unit <ID>.\nUsage: closeout trace PLAN --unit ID [options]"],
+    [["trace", "--unit", "x"], "closeout trace needs PLAN."],
+    [["trace", "a.yaml", "--unit", "x", "--out", "y"], "closeout trace has no option --out."],
+    [["inspect", "a.yaml"], 'closeout has no command "inspect".\n'],
     [["report"], "closeout report needs PLAN.\nUsage: closeout report PLAN [options]"],
     [["report", "a.yaml", "b.yaml"], "closeout report was given too many names."],
     [["report", "a.yaml", "--thread", "2"], "closeout report has no option --thread. Did you mean --threads?"],
@@ -121,7 +164,7 @@ describe("wrong arguments", () => {
     [["report", "a.yaml", "--threads", "none"], "--threads none: expected a whole number, 1 or more."],
     [["report", "a.yaml", "--threads", "0"], "--threads 0: expected a whole number, 1 or more."],
     [["report", "a.yaml", "--memory", "4"], "--memory 4: expected a size with its unit, such as 500MB or 4GB."],
-    [["schema", "log"], 'There is no schema of "log".\nUsage: closeout schema [plan|report]'],
+    [["schema", "log"], 'There is no schema of "log".\nUsage: closeout schema [plan|report|check]'],
   ])("closeout %j: status 2, on stderr alone, without asking the library", async (argv, message) => {
     const { status, stdout, stderr, asked } = await command(argv);
     expect(stderr).toContain(message);
@@ -150,7 +193,10 @@ describe("what is asked for", () => {
       "verify",
       "compare",
       "seal",
+      "check",
+      "trace",
       "demo",
+      "size",
       "schema",
       "help",
     ]);
@@ -172,6 +218,7 @@ describe("what is asked for", () => {
     expect(JSON.parse((await command(["schema"])).stdout)).toEqual({ title: "plan" });
     expect(JSON.parse((await command(["schema", "plan"])).stdout)).toEqual({ title: "plan" });
     expect(JSON.parse((await command(["schema", "report"])).stdout)).toEqual({ title: "report" });
+    expect(JSON.parse((await command(["schema", "check"])).stdout)).toEqual({ title: "check" });
   });
 });
 

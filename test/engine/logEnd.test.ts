@@ -1,7 +1,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import type { Layout } from "../../src/engine/layout.ts";
-import { logEnd } from "../../src/engine/logEnd.ts";
+import { logEnd, spansOf } from "../../src/engine/logEnd.ts";
 import { join, sql, timeBins } from "../../src/engine/sql/index.ts";
 import { ascending } from "../oracle/number.ts";
 import { inEngine } from "./duck.ts";
@@ -24,13 +24,15 @@ function endOf(rows: readonly LogRow[]): Promise<bigint | null> {
     }
     const bins = await engine.query(timeBins({ matches: [{}] } as unknown as Layout));
     return logEnd(
-      bins.map((bin) => ({
-        source: Number(bin.source),
-        rows: Number(bin.rows),
-        firstUs: BigInt(String(bin.first_us)),
-        lastUs: BigInt(String(bin.last_us)),
-        counted: bin.counted === true,
-      })),
+      spansOf(
+        bins.map((bin) => ({
+          source: Number(bin.source),
+          rows: Number(bin.rows),
+          firstUs: BigInt(String(bin.first_us)),
+          lastUs: BigInt(String(bin.last_us)),
+          counted: bin.counted === true,
+        })),
+      ),
     );
   });
 }

@@ -3,6 +3,7 @@ import { nanoText } from "./number.ts";
 import { trace } from "./oracle.ts";
 import { clockOf } from "./time.ts";
 import type { Lists, OracleMetric, RawFile } from "./types.ts";
+import { isIn } from "./units.ts";
 
 /**
  * METHODS 6 read as what it says: the same log under a plan that makes another choice. Each choice is the whole oracle,
@@ -14,7 +15,8 @@ export type OracleChoice =
   | "cap-0.999"
   | "other-way-in-two-variants"
   | "any-follow-up"
-  | "without-first-day";
+  | "without-first-day"
+  | `without-incident:${string}`;
 
 /** Null where the plan leaves no such choice. */
 export function underChoice(
@@ -40,6 +42,8 @@ export function underChoice(
         : metrics({ ...capsHeld(plan, files, lists), followUp: { ...plan.followUp, incomplete: "keep" } });
     case "without-first-day":
       return withoutFirstDay(plan, files, lists);
+    default:
+      return withoutIncident(choice, plan, files, lists);
   }
 }
 
@@ -75,5 +79,22 @@ function withoutFirstDay(plan: Plan, files: readonly RawFile[], lists: Lists): r
   return result.metrics.map((metric) => ({
     ...metric,
     values: metric.values.filter(({ unit }) => days.get(unit) !== first),
+  }));
+}
+
+/** Without the units whose enrolling row falls into the incident. */
+function withoutIncident(
+  choice: `without-incident:${string}`,
+  plan: Plan,
+  files: readonly RawFile[],
+  lists: Lists,
+): readonly OracleMetric[] | null {
+  const incident = plan.incidents.find(({ name }) => choice === `without-incident:${name}`);
+  if (incident === undefined) return null;
+  const { result, units } = trace(plan, files, lists);
+  const struck = new Set(units.filter((unit) => isIn(incident, unit)).map(({ unit }) => unit));
+  return result.metrics.map((metric) => ({
+    ...metric,
+    values: metric.values.filter(({ unit }) => !struck.has(unit)),
   }));
 }

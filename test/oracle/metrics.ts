@@ -4,6 +4,7 @@ import type { Aggregate, Metric, Part, Plan } from "../../src/plan/types.ts";
 import { rowAt } from "./ledger.ts";
 import { ascending, nanoOf, readDecimal } from "./number.ts";
 import { orderedArm, zFor } from "./quantile.ts";
+import { sinceOf } from "./sinceEnrolment.ts";
 import { DAY_US, partMatches } from "./span.ts";
 import type { Clock } from "./time.ts";
 import type { OracleMetric, Row, UnitValue } from "./types.ts";
@@ -31,7 +32,8 @@ export function metricOf(
   { counted, before: earlier }: RowTables,
   analysed: readonly Unit[],
   clock: Clock,
-): OracleMetric {
+  end: bigint | null,
+): Omit<OracleMetric, "ledger"> {
   const parts = metric.per === null ? [metric.of] : [metric.of, metric.per];
   const matched = parts.map((part) => new Set(matchedRows(part, rows, counted)));
   const numberless = parts.flatMap((part, place) =>
@@ -48,6 +50,9 @@ export function metricOf(
   });
   const cap = capOf(metric, before);
   const { quantile: q } = metric;
+  const values = before.map((value) => (cap !== null && value.of > cap ? { ...value, of: cap } : value));
+  const inFollowUp = counted.objects() as { at: number; unit: string }[];
+  const rowsOf = (unit: string) => inFollowUp.filter((row) => row.unit === unit).map((row) => rowAt(rows, row.at));
   return {
     metric: metric.name,
     leftOut: byVariant(plan, (variant) => ofVariant(analysed, variant).length - ofVariant(before, variant).length),
@@ -60,7 +65,8 @@ export function metricOf(
             value: cap,
             units: byVariant(plan, (variant) => ofVariant(before, variant).filter(({ of }) => of > cap).length),
           },
-    values: before.map((value) => (cap !== null && value.of > cap ? { ...value, of: cap } : value)),
+    values,
+    since: sinceOf(plan, metric, rowsOf, values, analysed, cap, end),
     quantile:
       q === null
         ? null

@@ -1,13 +1,16 @@
 import { type ColumnTable, op, escape as rowwise } from "arquero";
 import type { Plan } from "../../src/plan/types.ts";
 import { countCopies, rowAt, type SettledRow, settleRows } from "./ledger.ts";
+import { enrolledOf, levelOf, levelsOf } from "./levels.ts";
+import { metricLedger } from "./metric-ledger.ts";
 import { byVariant, metricOf } from "./metrics.ts";
 import { ascending } from "./number.ts";
 import { readRows } from "./rows.ts";
+import { soundnessOf } from "./soundness.ts";
 import { logEnd, partsOf } from "./span.ts";
 import { type Clock, clockOf } from "./time.ts";
 import type { Lists, OracleFacts, OracleResult, RawFile, Row } from "./types.ts";
-import { followUpEnd, rowLineIds, seeUnits, type Unit, unitLineIds } from "./units.ts";
+import { followUpEnd, isIn, rowLineIds, seeUnits, type Unit, unitLineIds } from "./units.ts";
 
 /** A row that has ended: on which line, and of what place in canonical order. */
 export interface EndedRow {
@@ -57,8 +60,12 @@ export function trace(plan: Plan, files: readonly RawFile[], lists: Lists): Trac
       const nameless = id === "not-enrolled" || id === "unknown-variant";
       return { id, units: here.length, byVariant: nameless ? null : countUnits(plan, here) };
     }),
-    facts: factsOf(plan, rows, ended, units, end),
-    metrics: plan.metrics.map((metric) => metricOf(plan, metric, rows, { counted, before }, analysed, clock)),
+    facts: { ...factsOf(plan, rows, ended, units, end, clock), analysedByDay: byDay(plan, analysed, clock) },
+    metrics: plan.metrics.map((metric) => ({
+      ...metricOf(plan, metric, rows, { counted, before }, analysed, clock, end),
+      ledger: metricLedger(plan, metric, rows, ended),
+    })),
+    places: placesOf(plan, units, analysed, clock),
   };
   return { clock, rows, ended, units, result };
 }
@@ -87,16 +94,15 @@ function counts(ended: ColumnTable): Map<string, number> {
   return new Map(lines.map(({ line, rows }) => [line, rows]));
 }
 
-const NOT_ENROLLED = ["not-enrolled", "outside-enrolment", "unknown-variant"];
-
 function factsOf(
   plan: Plan,
   rows: readonly Row[],
   ended: readonly EndedRow[],
   units: readonly Unit[],
   end: bigint | null,
-): OracleFacts {
-  const enrolled = units.filter(({ line }) => !NOT_ENROLLED.includes(line));
+  clock: Clock,
+): Omit<OracleFacts, "analysedByDay"> {
+  const enrolled = enrolledOf(units);
   const unitsOn = (line: string) => new Set(ended.filter((row) => row.line === line).map(({ unit }) => unit));
   const rejected = unitsOn("rejected");
   const duplicate = unitsOn("duplicate");
@@ -124,7 +130,53 @@ function factsOf(
     firstEnrolledUs: times[0] ?? null,
     lastEnrolledUs: times.at(-1) ?? null,
     logEndUs: end,
+    subgroups: plan.subgroups.map((column) => levelsOf(plan, column, enrolled)),
+    soundness: soundnessOf(
+      plan,
+      ended.map(({ at, line }) => ({ row: rowAt(rows, at), line })),
+      units,
+      end,
+      clock,
+    ),
+    inIncidents: plan.incidents.map((incident) =>
+      countUnits(
+        plan,
+        units.filter((unit) => unit.line === "analysed" && isIn(incident, unit)),
+      ),
+    ),
   };
+}
+
+/** Where each analysed unit stands among the days and the levels of the enrolled. */
+function placesOf(plan: Plan, units: readonly Unit[], analysed: readonly Unit[], clock: Clock): OracleResult["places"] {
+  const columns = plan.subgroups.map((column) => levelsOf(plan, column, enrolledOf(units)));
+  return new Map(
+    analysed.map((unit) => [
+      unit.unit,
+      {
+        day: unit.enrolledUs === null ? null : clock.day(unit.enrolledUs),
+        levels: columns.map(({ column, levels }) => {
+          const own = levelOf(plan, column, unit);
+          const named = levels.findIndex(({ level }) => level.kind === "value" && level.text === own);
+          if (named >= 0) return named;
+          return levels.findIndex(({ level }) => level.kind === (own === null ? "missing" : "rest"));
+        }),
+      },
+    ]),
+  );
+}
+
+/** Units by the local day of their enrolment. */
+function byDay(plan: Plan, units: readonly Unit[], clock: Clock): OracleFacts["analysedByDay"] {
+  const dayOf = ({ enrolledUs }: Unit) => (enrolledUs === null ? null : clock.day(enrolledUs));
+  const days = [...new Set(units.map(dayOf))].filter((day) => day !== null).sort((a, b) => a - b);
+  return days.map((day) => ({
+    day,
+    units: countUnits(
+      plan,
+      units.filter((unit) => dayOf(unit) === day),
+    ),
+  }));
 }
 
 function countUnits(plan: Plan, units: readonly Unit[]): number[] {

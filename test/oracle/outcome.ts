@@ -1,5 +1,6 @@
-import type { ByVariant, CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
+import type { ByVariant, CellTable, MetricCells, MetricGroups, Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
+import { type GroupsOutcome, groupsOfEngine, groupsOfOracle } from "./group-outcome.ts";
 import { ascending, nanoOf, nanoText } from "./number.ts";
 import type { OracleQuantile } from "./quantile.ts";
 import type { OracleFacts, OracleMetric, OracleResult, UnitValue } from "./types.ts";
@@ -19,6 +20,8 @@ export interface Outcome {
 
 export interface MetricOutcome {
   readonly metric: string;
+  /** By row line: rows, and the sum of its column as text. */
+  readonly ledger: Readonly<Record<string, readonly [number, string | null]>>;
   readonly leftOut: ByVariant;
   readonly countedRows: number;
   readonly countedWithoutNumber: number;
@@ -32,6 +35,7 @@ export interface MetricOutcome {
   readonly covariate: readonly CovariateOutcome[] | null;
   /** The same by variant and bucket, "0/517". */
   readonly buckets: Readonly<Record<string, ArmOutcome>>;
+  readonly groups: GroupsOutcome;
 }
 
 /** Decimals as text, exact; null where the arm has no such rank. */
@@ -65,6 +69,7 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
       const isRatio = plan.metrics.some(({ name, per: part }) => name === metric.metric && part !== null);
       return {
         metric: metric.metric,
+        ledger: metricLines(metric.ledger),
         leftOut: metric.leftOut,
         countedRows: metric.countedRows,
         countedWithoutNumber: metric.countedWithoutNumber,
@@ -82,6 +87,7 @@ export function outcomeOfOracle(plan: Plan, result: OracleResult): Outcome {
             armOf(metric.values.filter((value) => bucketKey(value) === key)),
           ]),
         ),
+        groups: groupsOfOracle(plan, metric, result.places),
       };
     }),
   };
@@ -100,6 +106,7 @@ export function outcomeOfEngine(
       const cells = cellsOf(metric.of);
       return {
         metric: metric.metric,
+        ledger: metricLines(reduction.metricLedgers[m]?.lines ?? []),
         leftOut: metric.leftOut,
         countedRows: metric.countedRows,
         countedWithoutNumber: metric.countedWithoutNumber,
@@ -112,10 +119,19 @@ export function outcomeOfEngine(
         per: metric.ratio === null ? null : mergedArms(plan, cellsOf(metric.ratio.per)),
         covariate: metric.covariate === null ? null : covariateCells(plan, metric.covariate),
         buckets: Object.fromEntries(cells.map((cell) => [bucketKey(cell), merged([cell])])),
+        groups: groupsOfEngine(groupsAt(reduction, m)),
       };
     }),
   };
 }
+
+function groupsAt({ groups }: Reduction, m: number): MetricGroups {
+  const found = groups[m];
+  if (found === undefined) throw new Error(`no groups of metric ${m}`);
+  return found;
+}
+const metricLines = (lines: OracleMetric["ledger"]): MetricOutcome["ledger"] =>
+  Object.fromEntries(lines.map(({ id, rows, sum }) => [id, [rows, sum === null ? null : nanoText(sum)] as const]));
 
 const isAdjusted = (plan: Plan, metric: string) =>
   plan.metrics.some(({ name, adjustFor }) => name === metric && adjustFor !== null);
@@ -168,6 +184,27 @@ function factsOf(facts: OracleFacts): Record<string, unknown> {
     firstEnrolledUs: instant(facts.firstEnrolledUs),
     lastEnrolledUs: instant(facts.lastEnrolledUs),
     logEndUs: instant(facts.logEndUs),
+    analysedByDay: facts.analysedByDay,
+    subgroups: facts.subgroups,
+    inIncidents: facts.inIncidents,
+    soundness: soundnessOutcome(facts.soundness),
+  };
+}
+
+/** Hours without rows are many and say nothing that their number does not. */
+function soundnessOutcome({ enrolling, sources, ...facts }: OracleFacts["soundness"]): Record<string, unknown> {
+  const isTaken = enrolling.taken.flat().some((units) => units > 0);
+  return {
+    ...facts,
+    // Only where a filter took a row that enrols is anything asked of the others.
+    enrolling: isTaken ? enrolling : enrolling.taken,
+    sources: sources.map(({ hours, ...source }) => ({
+      ...source,
+      first: hours[0],
+      last: hours.at(-1),
+      length: hours.length,
+      filled: hours.flatMap((hour, i) => (hour.rows > 0 ? [[i, hour]] : [])),
+    })),
   };
 }
 

@@ -47,7 +47,11 @@ export type OracleFacts = Pick<
   | "missingVariants"
   | "firstEnrolledUs"
   | "lastEnrolledUs"
+  | "inIncidents"
   | "logEndUs"
+  | "analysedByDay"
+  | "subgroups"
+  | "soundness"
 >;
 
 /** One analysed unit's value of a metric, in 10^-9, after the cap. */
@@ -62,8 +66,21 @@ export interface UnitValue {
   readonly x: bigint | null;
 }
 
+/** What a unit did on each day since its enrolment, in 10^-9. */
+export interface OracleSince {
+  readonly days: number;
+  readonly units: readonly {
+    readonly unit: string;
+    readonly variant: number;
+    readonly of: readonly bigint[];
+    readonly per: readonly bigint[] | null;
+  }[];
+}
+
 export interface OracleMetric {
   readonly metric: string;
+  /** Every row line, for the rows that `of` matches; sum in 10^-9, null where `of` takes no column. */
+  readonly ledger: readonly { readonly id: string; readonly rows: number; readonly sum: bigint | null }[];
   readonly leftOut: ByVariant;
   readonly countedRows: number;
   readonly countedWithoutNumber: number;
@@ -71,6 +88,16 @@ export interface OracleMetric {
   readonly values: readonly UnitValue[];
   /** Of a quantile, one an arm, at the critical value of the metric's intervals; null without values. */
   readonly quantile: readonly (OracleQuantile | null)[] | null;
+  /** By day since enrolment; null where that is not told. */
+  readonly since: OracleSince | null;
+}
+
+/** Where an analysed unit stands among days and levels. */
+export interface OraclePlace {
+  /** The local day of its enrolment; null without time. */
+  readonly day: number | null;
+  /** One a subgroup column: the place of its level in the facts. */
+  readonly levels: readonly number[];
 }
 
 export interface OracleResult {
@@ -80,4 +107,6 @@ export interface OracleResult {
   readonly unitLines: readonly { readonly id: string; readonly units: number; readonly byVariant: ByVariant | null }[];
   readonly facts: OracleFacts;
   readonly metrics: readonly OracleMetric[];
+  /** By unit. */
+  readonly places: ReadonlyMap<string, OraclePlace>;
 }

@@ -1,5 +1,5 @@
 import { type ColumnTable, op, escape as rowwise } from "arquero";
-import type { Filter, Plan } from "../../src/plan/types.ts";
+import type { Filter, Incident, Plan } from "../../src/plan/types.ts";
 import { rowAt, type SettledRow } from "./ledger.ts";
 import { DAY_US } from "./span.ts";
 import type { Lists, Row } from "./types.ts";
@@ -72,6 +72,12 @@ function unitLine(plan: Plan, known: Known): string {
   if (filter !== undefined) return `filter:${filter.name}`;
   if (isUnfollowed(plan, enrolling.us, known.end)) return "follow-up";
   return "analysed";
+}
+
+/** Whether a unit's enrolling row falls into an incident; from is inside, before is not. */
+export function isIn({ fromUs, beforeUs, where }: Incident, { enrolling, enrolledUs }: Unit): boolean {
+  if (enrolling === null || enrolledUs === null) return false;
+  return enrolledUs >= fromUs && enrolledUs < beforeUs && holds(where, enrolling.cell);
 }
 
 /** From is inside, before is not. */

@@ -23,6 +23,8 @@ describe("the plan's JSON Schema", () => {
   it.each([
     { forecast: "forecast: {units-per-month: 30000}" },
     { decision: "decision: {primaries: any, interval: skew-corrected}" },
+    { looks: "looks: {planned: [25%, 0.5, 1], at: 2, spending: pocock}" },
+    { incidents: "incidents: [{name: a, from: 2026-03-04, before: 2026-03-05T12:00, where: {x: 1}, what: b}]" },
     { metrics: metric("adjust-for: {days-before: 0.5}") },
     { metrics: metric("adjust-for: {column: past_fares}") },
     { metrics: metric("quantile: 95%") }, // which summary has it is beyond an editor
@@ -40,6 +42,10 @@ describe("the plan's JSON Schema", () => {
     ["two amounts", { metrics: "metrics: [{name: B, summary: mean, of: {}, margin: {relative: 0.1, absolute: 1}}]" }],
     ["a forecast of no units", { forecast: "forecast: {units-per-month: 0}" }],
     ["a forecast of half a unit", { forecast: "forecast: {units-per-month: 0.5}" }],
+    ["looks without which", { looks: "looks: {planned: [0.5, 1]}" }],
+    ["a look beyond the planned size", { looks: "looks: {planned: [0.5, 1.5], at: 1}" }],
+    ["a single look", { looks: "looks: {planned: [1], at: 1}" }],
+    ["an incident without an end", { incidents: "incidents: [{name: a, from: 2026-03-04}]" }],
     ["two covariates in one", { metrics: metric("adjust-for: {days-before: 7, column: past}") }],
     ["no days before", { metrics: metric("adjust-for: {days-before: 0}") }],
     ["a quantile of 95", { metrics: metric("quantile: 95") }],

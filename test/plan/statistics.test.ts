@@ -109,7 +109,7 @@ it("a forecast is how many units enrol in a month, or none", () => {
 
 it("the whole format comes out with all of these", () => {
   const whole = readFileSync(new URL("fixtures/whole-format.yaml", import.meta.url), "utf8");
-  const plan = planOf(whole.replace(/^subgroups:.*\n/m, ""));
+  const plan = planOf(whole);
   expect(plan.metrics.map(({ name, quantile, adjustFor }) => ({ name, quantile, adjustFor }))).toEqual([
     { name: "Booked", quantile: null, adjustFor: null },
     { name: "Fare per visitor", quantile: null, adjustFor: { kind: "days-before", days: 14 } },
@@ -118,4 +118,5 @@ it("the whole format comes out with all of these", () => {
     { name: "Support contacts", quantile: null, adjustFor: null },
   ]);
   expect(plan.forecast).toEqual({ unitsPerMonth: 30000 });
+  expect(plan.subgroups).toEqual(["country", "platform"]);
 });

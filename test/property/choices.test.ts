@@ -35,8 +35,9 @@ describe("the cells under other reasonable choices", () => {
   const meet = (cells: readonly MetricCells[], where: string) => {
     for (const { choices } of cells)
       for (const found of choices) {
+        const choice = found.choice.split(":")[0] ?? "";
         const paired = found.choice !== "log" && found.joint !== null ? " of a pair" : "";
-        met.set(`${where}: ${found.choice}${paired}`, (met.get(`${where}: ${found.choice}${paired}`) ?? 0) + 1);
+        met.set(`${where}: ${choice}${paired}`, (met.get(`${where}: ${choice}${paired}`) ?? 0) + 1);
       }
   };
 
@@ -48,7 +49,10 @@ describe("the cells under other reasonable choices", () => {
         const plan = planFromYaml(text);
         const [files, lists] = [rawFiles(drawn), rawLists(drawn)];
         const own = trace(plan, files, lists).result.metrics;
-        const others = CHOICES.map((choice) => [choice, underChoice(choice, plan, files, lists)] as const);
+        const incidents = plan.incidents.map(({ name }) => `without-incident:${name}` as const);
+        const others = [...CHOICES, ...incidents].map(
+          (choice) => [choice, underChoice(choice, plan, files, lists)] as const,
+        );
         const { metrics } = (await runEngine(path)).reduction;
         meet(metrics, "log");
         return metrics.flatMap((cells, m) =>
@@ -83,8 +87,15 @@ describe("the cells under other reasonable choices", () => {
   });
 
   it("came by every choice, of a value alone and of a pair", () => {
-    const logs = CHOICES.filter((choice) => !choice.startsWith("cap-"));
-    const tables = ["no-cap", "cap-0.99", "cap-0.999", "other-way-in-two-variants"];
+    const logs = [...CHOICES.filter((choice) => !choice.startsWith("cap-")), "without-incident"];
+    const tables = [
+      "no-cap",
+      "cap-0.99",
+      "cap-0.999",
+      "other-way-in-two-variants",
+      "without-first-day",
+      "without-incident",
+    ];
     const wanted = [
       ...["log: log", "table: log"],
       ...logs.flatMap((choice) => [`log: ${choice}`, `log: ${choice} of a pair`]),

@@ -2,6 +2,7 @@ import type { Reduction } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
 import { outcomeOfEngine, outcomeOfOracle } from "../oracle/outcome.ts";
 import type { OracleResult } from "../oracle/types.ts";
+import { wrongGroups } from "./groupSums.ts";
 import type { EngineRun } from "./run.ts";
 import { wrongSums } from "./sums.ts";
 
@@ -13,12 +14,14 @@ export function departures(plan: Plan, oracle: OracleResult, { reduction, quanti
   if (unbalanced.length > 0) return unbalanced;
   return oracle.metrics.flatMap((metric, at) => {
     const cells = reduction.metrics[at];
-    return cells === undefined ? [`no cells for ${metric.metric}`] : wrongSums(plan, metric, cells);
+    const groups = reduction.groups[at];
+    if (cells === undefined || groups === undefined) return [`no cells for ${metric.metric}`];
+    return [...wrongSums(plan, metric, cells), ...wrongGroups(metric, cells, groups)];
   });
 }
 
 /** The ledger adds up, and so does each unit line over the variants, but for units outside whose variant the plan lacks. */
-function sums({ rowsRead, rowLines, unitsSeen, unitLines }: Reduction): string[] {
+function sums({ rowsRead, rowLines, unitsSeen, unitLines, metricLedgers }: Reduction): string[] {
   const rows = rowLines.reduce((sum, line) => sum + line.rows, 0);
   const units = unitLines.reduce((sum, line) => sum + line.units, 0);
   const lines = unitLines.filter(({ id, units: all, byVariant }) => {
@@ -28,6 +31,11 @@ function sums({ rowsRead, rowLines, unitsSeen, unitLines }: Reduction): string[]
   return [
     ...(rows === rowsRead ? [] : [`the row lines hold ${rows} rows, but ${rowsRead} were read`]),
     ...(units === unitsSeen ? [] : [`the unit lines hold ${units} units, but ${unitsSeen} were seen`]),
+    ...metricLedgers.flatMap(({ metric, lines: own }) =>
+      own.flatMap(({ id, rows: some }, at) =>
+        some <= (rowLines[at]?.rows ?? 0) ? [] : [`${metric}, line ${id}: ${some} rows of ${rowLines[at]?.rows}`],
+      ),
+    ),
     ...lines.map(({ id, units: all, byVariant }) => `line ${id}: ${all} units, ${byVariant?.join(" + ")} by variant`),
   ];
 }

@@ -44,6 +44,8 @@ describe("the sensitivity of report.json", () => {
       "cap-0.99",
       "cap-0.999",
       "other-way-in-two-variants",
+      "without-first-day",
+      "without-incident:outage",
       "without-largest",
       "welch",
       "normal",

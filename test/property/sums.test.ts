@@ -42,7 +42,9 @@ function wrong(change: Partial<CellTable>): string[] {
       per: null,
       x: null,
     })),
+    since: null,
     quantile: null,
+    ledger: [],
   };
   const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null, covariate: null } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);

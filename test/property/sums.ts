@@ -3,6 +3,7 @@ import type { Plan } from "../../src/plan/types.ts";
 import { momentsOf, quotient, scoresOf } from "../oracle/moments.ts";
 import { ascending, nanoOf } from "../oracle/number.ts";
 import type { OracleMetric } from "../oracle/types.ts";
+import { wrongSizes } from "./sizes.ts";
 
 /**
  * The power sums of a metric's cells against the exact ones: what is wrong, one line each.
@@ -25,6 +26,7 @@ export function wrongSums(plan: Plan, oracle: OracleMetric, cells: MetricCells):
           arms.map((arm) => arm.map(({ per }) => per ?? 0n)),
         ).map((line) => `per: ${line}`)),
     ...(cells.ratio === null ? [] : wrongScores(cells.ratio.score, arms).map((line) => `score: ${line}`)),
+    ...wrongSizes(plan, oracle, cells),
     ...(cells.covariate === null ? [] : wrongCovariate(cells.covariate, arms)),
   ];
   return wrong.map((line) => `${oracle.metric}, ${line}`);

@@ -41,7 +41,7 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
   };
 }
 
-function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly flow?: HandFlow }): ReportInputs {
+export function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly flow?: HandFlow }): ReportInputs {
   const { plan, effects = [] } = over;
   const reduction = reductionOf(plan, over.flow ?? flow);
   const units = analysedUnits(reduction);
@@ -52,6 +52,9 @@ function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; readonly fl
     reduction,
     checks: [allocationPassed, ...otherChecks.slice(0, 2), duplicatesCaution, ...otherChecks.slice(2)],
     choices: [],
+    accruals: [],
+    daysSince: [],
+    subgroups: [],
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
     effects: withFamilies(plan, effects).map((effect) => withPower(effect, plan, units)),
@@ -298,6 +301,8 @@ export const little = inputs({
     followUp: null,
     filters: [],
     plannedUnits: null,
+    looks: null,
+    incidents: [],
     metrics: [booked, contacts, { ...fare, cap: null, worthwhile: null, role: "primary" }, perSearch],
     registered: null,
     texts: { ended: null, owner: null, link: null, limits: null, notes: null, decided: null },

@@ -2,7 +2,8 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
-import { hostile } from "./hostile.ts";
+import { hostile, hostileMeanwhile } from "./hostile.ts";
+import { atALook, meanwhile } from "./meanwhile.ts";
 import { quantiles } from "./quantiles.ts";
 import { secondRun, thirdRun, undecidableRerun } from "./rerun-case.ts";
 
@@ -17,8 +18,11 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["far from normal", farFromNormal],
   ["adjusted", adjustedCase],
   ["quantiles", quantiles],
+  ["incidents", meanwhile],
+  ["an interim look", atALook],
   ["hostile", hostile],
   ["a second run", secondRun],
   ["a third run with another rule", thirdRun],
   ["a rerun of which nothing can be decided", undecidableRerun],
+  ["hostile incidents", hostileMeanwhile],
 ];

@@ -1,5 +1,6 @@
 import type { ReportInputs } from "../../src/report/types.ts";
 import { adopt } from "./cases.ts";
+import { meanwhile } from "./meanwhile.ts";
 
 /** Text that would do harm if any of it reached the page, the style, a template or the terminal as it stands. */
 const POISON = [
@@ -36,6 +37,9 @@ const KEPT_VALUES = new Set(["value", "q", "at"]);
 /** The case "adopt" with poison in every name and text that comes from a plan, a log or a check. */
 export const hostile: ReportInputs = poisoned(adopt, "") as ReportInputs;
 
+/** The same with incidents, of which the choices' names are made. */
+export const hostileMeanwhile: ReportInputs = poisoned(meanwhile, "") as ReportInputs;
+
 function poisoned(value: unknown, key: string): unknown {
   if (typeof value === "string") return KEPT_FIELDS.has(key) && key !== "id" ? value : text(value, key);
   if (Array.isArray(value)) return value.map((item) => poisoned(item, key));
@@ -44,6 +48,7 @@ function poisoned(value: unknown, key: string): unknown {
 }
 
 function text(value: string, key: string): string {
+  if (key === "choice" && value.includes(":")) return text(value, "id");
   if (KEPT_MORE.has(key) || (KEPT_VALUES.has(key) && /^[\d.]+$/.test(value))) return value;
   if (key === "pivot") return value;
   if (key === "id") return value.replace(/:(.*)$/s, (_, name: string) => `:${text(name, "name")}`);

@@ -18,7 +18,16 @@ describe("report.json", () => {
   });
 
   it("has the type that its schema describes, but for the figures of checks, which are open", () => {
-    type Closed = "experiment" | "conclusion" | "flow" | "provenance" | "format" | "changes" | "subgroups" | "accrual";
+    type Closed =
+      | "experiment"
+      | "conclusion"
+      | "flow"
+      | "provenance"
+      | "format"
+      | "changes"
+      | "subgroups"
+      | "accrual"
+      | "sinceEnrolment";
     expectTypeOf<Mutable<Pick<ReportJson, Closed>>>().toEqualTypeOf<Pick<z.infer<typeof reportSchema>, Closed>>();
   });
 
@@ -69,6 +78,21 @@ describe("report.json", () => {
       expect(sum(flow.units.map(({ units }) => units))).toBe(flow.unitsSeen);
     }
   });
+
+  it("holds the ledger of each metric's rows by the lines of all rows, with a sum where the metric takes a column", () => {
+    const { flow } = reportJson(cases.several);
+    expect(flow.metrics.length).toBeGreaterThan(1);
+    for (const { lines } of flow.metrics) expect(lines.map(({ id }) => id)).toEqual(flow.rows.map(({ id }) => id));
+    const summed = flow.metrics.flatMap(({ metric, lines }) =>
+      lines.every(({ sum }) => sum !== null) ? [metric] : [],
+    );
+    expect(summed).toEqual(
+      cases.several.plan.metrics.flatMap(({ name, of }) => ("column" in of.aggregate ? [name] : [])),
+    );
+    // 5 duplicates of 812.35 kr each
+    const fare = flow.metrics.find(({ metric }) => metric === summed[0]);
+    expect(fare?.lines[1]).toMatchObject({ id: "duplicate", rows: 5, sum: 4061.75 });
+  });
 });
 
 describe("a number on its way into report.json", () => {
@@ -94,7 +118,9 @@ describe("the JSON Schema", () => {
     expect(schema.$schema).toBe("https://json-schema.org/draft/2020-12/schema");
     expect(schema.additionalProperties).toBe(false);
     expect(schema.required).toEqual(
-      "format experiment conclusion flow checks effects subgroups accrual sensitivity changes provenance".split(" "),
+      "format experiment conclusion flow checks effects subgroups accrual sinceEnrolment sensitivity changes provenance".split(
+        " ",
+      ),
     );
   });
 });

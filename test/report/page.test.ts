@@ -145,7 +145,7 @@ describe("the page", () => {
     }
   });
 
-  it("shows in the table behind the picture the figures of report.json, to six digits", async () => {
+  it("shows in the table behind the picture the figures of report.json, to six digits, and p as everywhere", async () => {
     const { html, json } = await renderReport(several);
     const [, table = ""] = /<table class="numbers">\s*<caption id="forest-numbers">(.*?)<\/table>/s.exec(html) ?? [];
     const rows = [...table.matchAll(/<tr><th scope="row">(.*?)<\/tr>/g)].map(([, row = ""]) =>
@@ -162,7 +162,6 @@ describe("the page", () => {
         relative?.estimate,
         relative?.low,
         relative?.high,
-        difference.p,
       ];
       const shown = (rows[i] ?? []).map((cell) =>
         cell === "\u2013" ? null : Number(cell.replace("\u2212", "-").replaceAll(",", "")),
@@ -171,6 +170,10 @@ describe("the page", () => {
         if (figure === null || figure === undefined) expect(shown[f]).toBeNull();
         else expect(shown[f]).toBe(Number(figure.toPrecision(6)));
       });
+      const p = unescaped(rows[i]?.[8] ?? "");
+      if (difference.p === null) expect(p).toBe("\u2013");
+      else if (difference.p < 0.0001) expect(p).toBe("< 0.0001");
+      else expect(Math.abs(Number(p) / difference.p - 1)).toBeLessThan(0.05);
     });
   });
 

@@ -130,8 +130,11 @@ export const farePlan: Plan = {
       where: [{ column: "is_staff", kind: "in", values: [{ kind: "boolean", value: true }] }],
     },
   ],
+  subgroups: [],
   decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
   plannedUnits: 100_000,
+  looks: null,
+  incidents: [],
   forecast: null,
   registered: null,
   texts: {

@@ -1,5 +1,6 @@
-import type { CellTable, MetricCells, Reduction } from "../../src/engine/types.ts";
+import type { CellTable, MetricCells, Reduction, SizeTable } from "../../src/engine/types.ts";
 import type { Plan } from "../../src/plan/types.ts";
+import { soundnessOf } from "../checks/make.ts";
 
 /** The page reads no cell: contrasts are computed before it. */
 const noCells: CellTable = {
@@ -100,10 +101,24 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       missingEvents: [],
       missingVariants: [],
       firstEnrolledUs: 1_772_407_300_000_000n, // 2 March 2026, 00:21 in Oslo
+      inIncidents: plan.incidents.map(() => plan.variants.map(() => 700)),
       lastEnrolledUs: 1_773_615_500_000_000n, // 15 March 2026, 23:58 in Oslo
       logEndUs: 1_774_220_000_000_000n,
+      analysedByDay: [],
+      subgroups: [],
+      soundness: soundnessOf(plan, enrolled),
+      firstKeptUs: 1_772_407_300_000_000n,
+      lastKeptUs: 1_773_615_500_000_000n,
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
+    groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),
+    metricLedgers: plan.metrics.map(({ name, of }) => ({
+      metric: name,
+      lines: rowLines.map(({ id, rows }) => {
+        const own = Math.floor(rows / 40);
+        return { id, rows: own, sum: "column" in of.aggregate ? BigInt(own) * 812_350_000_000n : null };
+      }),
+    })),
     rejectReasons: [
       { reason: "at is not a time", rows: 30 },
       { reason: "fare is not a number", rows: 11 },
@@ -123,7 +138,24 @@ function cellsOf(name: string, plan: Plan): MetricCells {
     of: noCells,
     ratio: null,
     covariate: null,
+    sizes: metric === undefined || metric.summary === "proportion" ? null : sizesOf(plan),
     choices: [],
     ends: [],
+  };
+}
+
+/** Most at 0, the others about 200, one arm with a long tail and one value below 0. */
+function sizesOf({ variants }: Plan): SizeTable {
+  const rows = variants.flatMap((_, v) => [
+    ...(v === 0 ? [] : [{ variant: v, sign: -1, quarter: 14, units: 3 }]),
+    { variant: v, sign: 0, quarter: null, units: 43_800 - 300 * v },
+    ...[26, 27, 28, 29, 30, 31, 32].map((quarter, i) => ({ variant: v, sign: 1, quarter, units: 800 + 40 * i + v })),
+    ...(v === 1 ? [{ variant: v, sign: 1, quarter: 51, units: 1 }] : []),
+  ]);
+  return {
+    variant: rows.map(({ variant }) => variant),
+    sign: rows.map(({ sign }) => sign),
+    quarter: rows.map(({ quarter }) => quarter),
+    units: rows.map(({ units }) => units),
   };
 }

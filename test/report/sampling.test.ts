@@ -146,3 +146,25 @@ describe("page one", () => {
     expect(metrics).not.toMatch(/the conclusion (stays|changes)/);
   });
 });
+
+describe("section 5 at an early look", () => {
+  const at = async (critical: number) => {
+    const effects = farFromNormal.effects.map((effect) =>
+      effect.normality === null ? effect : { ...effect, normality: { ...effect.normality, critical } },
+    );
+    const { html } = await renderReport({ ...farFromNormal, effects });
+    return { text: textOf(html), drawings: html.match(/-drawing/g)?.length ?? 0 };
+  };
+
+  it("takes no interval from draws that do not reach its boundary, and draws none that it would leave", async () => {
+    const near = await at(2.36);
+    expect(near.text).toContain("Bootstrap-t interval, from 1,000 draws");
+    const early = await at(4.33); // 1,000 draws would hold 0.01 beyond it
+    expect(early.text).not.toContain("Bootstrap-t interval, from");
+    expect(early.text).toContain(
+      "No interval is taken from the 1,000 draws: this look\u2019s boundary lies farther out than they reach.",
+    );
+    expect(early.drawings).toBe(near.drawings);
+    expect((await at(7.8)).drawings).toBe(0);
+  });
+});

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { quotes, unbroken, withoutControls } from "../../src/report/typeset.ts";
+import { quotes, unbroken, withoutControls, withUnits } from "../../src/report/typeset.ts";
 
 describe("a text of the page", () => {
   it("has curly quotes around each name", () => {
@@ -14,6 +14,13 @@ describe("a text of the page", () => {
       "as uneven (p\u00a0<\u00a00.0001), or p\u00a0=\u00a00.03, on 1 map = 2",
     );
     expect(unbroken("(95% interval: 1% to 2%)")).toBe("(95%\u00a0interval: 1% to 2%)");
+  });
+
+  it("does not break between a figure and its unit of measure", () => {
+    expect(withUnits("0.018 s higher, 5 kr. and 5 sisters", ["s", "kr."])).toBe(
+      "0.018\u00a0s higher, 5\u00a0kr. and 5 sisters",
+    );
+    expect(withUnits("5 a.b 5 axb", ["a.b"])).toBe("5\u00a0a.b 5 axb");
   });
 
   it("shows a control character or an override of the writing direction as a sign, and keeps accents and Hebrew", () => {

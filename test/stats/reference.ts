@@ -170,3 +170,16 @@ export const adjustedContrasts = () =>
       treated: AdjustedShape;
     }[]
   >("adjusted-contrast.json");
+
+/** rpact 3.3.4 and mvtnorm 1.1-3: boundaries of planned looks, and the constants of O'Brien and Fleming and of Pocock. */
+export const lookBoundariesElsewhere = () =>
+  read<
+    {
+      by: "rpact" | "mvtnorm";
+      type: "asOF" | "asP" | "OF" | "P";
+      shares: number[];
+      alpha: number;
+      last?: boolean;
+      boundaries: string[];
+    }[]
+  >("looks.json");

@@ -113,6 +113,26 @@ describe("units for a test to come", () => {
     expect(with_([90, 10])).toEqual(with_([0.9, 0.1]));
   });
 
+  // rpact 3.3.4: an inflation of 1.02472 for five looks of the O'Brien-Fleming type at 5% and 80%
+  it("are more with planned looks by what these cost, alpha shared out evenly over the variants", () => {
+    const ahead = { allocation: [1, 1], distance: 0.001, alpha: 0.05, power: 0.8 };
+    const looks = { shares: [0.2, 0.4, 0.6, 0.8, 1], spending: "obrien-fleming", isLast: true } as const;
+    const [alone, with_] = [undefined, looks].map(
+      (planned) =>
+        sizing({ ...ahead, variances: meanVariances(1, 1), ...(planned === undefined ? {} : { looks: planned }) })
+          .total,
+    );
+    expectWithin((with_ ?? 0) / (alone ?? 1), 1.02472, 5e-6);
+    const two = sizing({ ...ahead, allocation: [1, 1, 1], variances: meanVariances(1, 2), looks });
+    const half = sizing({ ...ahead, alpha: 0.025, variances: meanVariances(1, 1), looks });
+    expect([two.critical, two.units[0]]).toEqual([half.critical, half.units[0]]);
+  });
+
+  it("are never under two in an arm, for one alone has no spread", () => {
+    const variances = meanVariances(1, 1);
+    expect(sizing({ variances, allocation: [1, 9], distance: 1e9, alpha: 0.05, power: 0.8 }).units).toEqual([2, 2]);
+  });
+
   it("take as many whole days as they need", () => {
     expect(enrolmentDays(1000, 100)).toBe(10);
     expect(enrolmentDays(1001, 100)).toBe(11);

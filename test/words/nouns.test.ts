@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { capital, dateSpan, dateText, list, plural, quoted, rates } from "../../src/words/index.ts";
+import { asSentence, capital, dateSpan, dateText, list, plural, quoted, rates } from "../../src/words/index.ts";
 
 describe("nouns", () => {
   it("has one of one, many of none and of many", () => {
@@ -48,4 +48,13 @@ describe("days", () => {
     expect(dateText({ year: 2026, month: 12, day: 24 })).toBe("24 December 2026");
     expect(() => dateText({ year: 2026, month: 13, day: 1 })).toThrow("1 to 12");
   });
+});
+
+describe("a text from the plan", () => {
+  it.each([
+    ["cards were refused", "cards were refused."],
+    ["cards were refused. ", "cards were refused. "],
+    ["why?", "why?"],
+    ["and so on\u2026", "and so on\u2026"],
+  ])("%j as a sentence is %j", (text, sentence) => expect(asSentence(text)).toBe(sentence));
 });

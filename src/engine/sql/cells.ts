@@ -32,7 +32,7 @@ export const doubleValue = (x: Statement, scale: number): Measured => ({
 
 /**
  * Reads   units
- * Gives   variant, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
+ * Gives   variant, grouping, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
  */
 export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): Statement {
   // Three nested levels, so that each of u, its powers and their whole parts is computed once a unit.
@@ -49,40 +49,45 @@ export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): St
     sql`min(${name(`x${i}`)}) AS ${name(`least${i}`)}`,
     sql`max(${name(`x${i}`)}) AS ${name(`most${i}`)}`,
   ]);
-  return sql`
-    SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
-    FROM (
-      SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
-    )
-    GROUP BY variant, bucket
-    ORDER BY variant, bucket`;
+  return grouped(over, us, terms, sums);
 }
 
-/** Which of the candidates, and in which groups. */
+/** Which rows of which table, by default of the candidates, and in which groups. */
 export interface Over {
   readonly bucket: Statement;
+  /** Other groupings in the same pass over the units; whole numbers that are never NULL, as the bucket. */
+  readonly others?: readonly Statement[];
   readonly units: Statement;
+  readonly from?: Statement;
 }
 export const EACH_BUCKET: Over = { bucket: sql`bucket`, units: sql`analysed` };
 export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
 /** Arm by arm, the units whose value is not 0. */
 export const unlessZero = (x: Statement): Over => ({ bucket: sql`0`, units: sql`(analysed AND ${x} <> 0)` });
 
-/** How a candidate stands to the choices of units: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day. */
-const STANDING = sql`CASE WHEN analysed THEN 1 ELSE 0 END + CASE WHEN other_way THEN 2 ELSE 0 END
-    + CASE WHEN any_follow_up THEN 4 ELSE 0 END + CASE WHEN first_day THEN 8 ELSE 0 END`;
+/**
+ * How a candidate stands to the choices of units: bits 1 analysed, 2 the other way, 4 any follow-up, 8 on the first day, and
+ * from 16 on one an incident, enrolled in it.
+ */
+function standing(incidents: number): Statement {
+  const bits = ["analysed", "other_way", "any_follow_up", "first_day", ...inIncidents(incidents)];
+  const terms = bits.map((column, k) => sql`CASE WHEN ${name(column)} THEN ${2 ** k} ELSE 0 END`);
+  return join(terms, " + ");
+}
+
+const inIncidents = (incidents: number) => Array.from({ length: incidents }, (_, k) => `i${k}`);
 
 /** Apart by standing, those that not every choice of units counts. */
-export const OTHERWISE: Over = {
-  bucket: STANDING,
-  units: sql`(NOT analysed OR NOT other_way OR NOT any_follow_up OR first_day)`,
-};
+export function otherwise(incidents: number): Over {
+  const alike = sql`analysed AND other_way AND any_follow_up`;
+  const apart = ["first_day", ...inIncidents(incidents)].map((column) => name(column));
+  return { bucket: standing(incidents), units: sql`(NOT (${alike}) OR ${join(apart, " OR ")})` };
+}
 export const NOT_ANALYSED = sql`(SELECT * FROM candidates WHERE NOT analysed)`;
 
 /** Gives variant, standing, units. */
-export const standingCounts = (): Statement => sql`
-  SELECT variant, ${STANDING} AS standing, count(*) AS units FROM candidates GROUP BY 1, 2`;
+export const standingCounts = (incidents: number): Statement => sql`
+  SELECT variant, ${standing(incidents)} AS standing, count(*) AS units FROM candidates GROUP BY 1, 2`;
 
 /** Units above the first of some caps in ascending order, apart by how many of the caps they lie above. */
 export function aboveCaps(x: Statement, caps: readonly string[], dialect: Dialect): Over {
@@ -108,7 +113,7 @@ export interface Pair {
 /**
  * What the cells of two values lack for their joint sums: the sum of products, and of a partial pair the sums of y over
  * the units that have x.
- * Gives   variant, bucket, and per pair i: n<i>, h<i>_11, l<i>_11; of a partial one h<i>_10, l<i>_10, h<i>_20, l<i>_20, y<i>
+ * Gives   variant, grouping, bucket, and per pair i: n<i>, h<i>_11, l<i>_11; of a partial one h<i>_10, l<i>_10, h<i>_20, l<i>_20, y<i>
  */
 export function jointCells(pairs: readonly Pair[], over: Over = EACH_BUCKET): Statement {
   const us = pairs.flatMap(({ y, x, isPartial }, i) => [
@@ -133,14 +138,36 @@ export function jointCells(pairs: readonly Pair[], over: Over = EACH_BUCKET): St
     ...["11", ...(isPartial ? ["10", "20"] : [])].flatMap((jk) => twoIntegers(name(`t${i}_${jk}`), `${i}_${jk}`)),
     ...(isPartial ? [sql`sum(${name(`y${i}`)}) AS ${name(`y${i}`)}`] : []),
   ]);
+  return grouped(over, us, terms, sums);
+}
+
+/** Sums by variant and bucket, and for every other grouping by variant and its group, which stands as bucket too. */
+function grouped(
+  { bucket, others = [], units, from = sql`candidates` }: Over,
+  us: readonly Statement[],
+  terms: readonly Statement[],
+  sums: readonly Statement[],
+): Statement {
+  const groups = [bucket, ...others].map((group, g) => ({ group, as: name(`g${g}`) }));
+  const columns = groups.map(({ as }) => as);
   return sql`
-    SELECT ${list([sql`variant`, sql`bucket`, ...sums])}
+    SELECT ${list([sql`variant`, ...placeOf(columns), ...sums])}
     FROM (
-      SELECT ${list([sql`variant`, sql`bucket`, ...terms])}
-      FROM (SELECT ${list([sql`variant`, sql`${over.bucket} AS bucket`, ...us])} FROM candidates WHERE ${over.units})
+      SELECT ${list([sql`variant`, ...columns, ...terms])}
+      FROM (SELECT ${list([sql`variant`, ...groups.map(({ group, as }) => sql`${group} AS ${as}`), ...us])} FROM ${from} WHERE ${units})
     )
-    GROUP BY variant, bucket
-    ORDER BY variant, bucket`;
+    GROUP BY GROUPING SETS (${list(columns.map((column) => sql`(variant, ${column})`))})
+    ORDER BY variant, grouping, bucket`;
+}
+
+/** Which grouping a row of sums belongs to, and its group there. */
+function placeOf(columns: readonly Statement[]): Statement[] {
+  const when = (value: (column: Statement, g: number) => Statement) =>
+    join(
+      columns.map((column, g) => sql`WHEN GROUPING(${column}) = 0 THEN ${value(column, g)}`),
+      "\n",
+    );
+  return [sql`CASE ${when((_, g) => sql`${g}`)} END AS grouping`, sql`CASE ${when((column) => column)} END AS bucket`];
 }
 
 /** Sums of the whole part and of the rest of t, as 64-bit terms. */

@@ -22,6 +22,8 @@ export interface Dialect {
   epochUs(timestamp: Statement): Statement;
   /** Microseconds to subtract where the text states an offset, else NULL: the clock is the plan's. */
   statedOffsetUs(text: Statement): Statement;
+  /** Levenshtein distance of two texts. */
+  editDistance(a: Statement, b: Statement): Statement;
   /** 64-bit hash, for finding what may be equal; equality itself is tested on the text. */
   hash(...values: readonly Statement[]): Statement;
   /** 0..1023, the same on every engine: md5, and not the engine's own hash. */
@@ -30,6 +32,8 @@ export interface Dialect {
   toDouble(decimal: Statement): Statement;
   /** floor(log2 |x|) of a decimal that is not 0. */
   powerClass(decimal: Statement): Statement;
+  /** 4 k + j of the double nearest to a decimal that is not 0: 2^k (1 + j / 4) <= |x| < 2^k (1 + (j + 1) / 4), j in 0..3. */
+  sizeClass(decimal: Statement): Statement;
   /** The value at the first (last) time among rows that hold one; ties go to the smallest value. */
   firstValue(value: Statement, atUs: Statement, condition: Statement): Statement;
   lastValue(value: Statement, atUs: Statement, condition: Statement): Statement;
@@ -78,16 +82,24 @@ export const duckdb: Dialect = {
     WHEN regexp_full_match(${text}, ${EPOCH}) THEN 0
     WHEN regexp_matches(${text}, ${`[T ].*[+-][0-9]{2}(:?[0-9]{2})?$`}) THEN ${offset(sql`regexp_extract(${text}, '[+-][0-9]{2}(:?[0-9]{2})?$')`)}
     END`,
+  editDistance: (a, b) => sql`levenshtein(${a}, ${b})`,
   hash: (...values) => sql`hash(${join(values, ", ")})`,
   bucket: (unit) => sql`CAST(md5_number(${unit}) & 1023 AS SMALLINT)`,
   toDouble: (decimal) => sql`CASE WHEN abs(${decimal}) < ${EXACT_BELOW}
     THEN CAST(${decimal} AS DOUBLE) ELSE CAST(CAST(${decimal} AS VARCHAR) AS DOUBLE) END`,
+  sizeClass: (decimal) => quarterOf(sql`abs(${duckdb.toDouble(decimal)})`),
   powerClass: (decimal) => sql`CAST(floor(log2(abs(CAST(${decimal} AS DOUBLE)))) AS INTEGER)`,
   firstValue: (value, atUs, condition) =>
     sql`arg_min(${value}, {'at': ${atUs}, 'value': ${value}}) FILTER (WHERE ${condition} AND ${value} IS NOT NULL)`,
   lastValue: (value, atUs, condition) =>
     sql`arg_max(${value}, {'at': ${atUs}, 'value': -${value}}) FILTER (WHERE ${condition} AND ${value} IS NOT NULL)`,
 };
+
+/** The logarithm may be one off beside a power of two: the quotient is exact, and -1 or 4 quarters are right there too. */
+function quarterOf(size: Statement): Statement {
+  const power = sql`floor(log2(${size}))`;
+  return sql`CAST(4 * ${power} + floor((${size} / pow(2.0, ${power}) - 1) * 4) AS INTEGER)`;
+}
 
 function bareEpoch(text: Statement, digits: Statement): Statement {
   const us = sql`try_cast(${text} AS BIGINT) * CASE WHEN ${digits} <= 11 THEN 1000000 WHEN ${digits} <= 14 THEN 1000 ELSE 1 END`;

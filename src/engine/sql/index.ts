@@ -2,16 +2,24 @@
 
 export * from "./cells.ts";
 /** What differs by engine. */
-export { type Dialect, duckdb, valueList } from "./dialect.ts";
+export { type Dialect, duckdb, localDay, valueList } from "./dialect.ts";
 export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
-export { atEnrolment, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
+export { atEnrolment, type EnrolmentKey, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
+/** Levels of subgroup columns. */
+export * from "./levels.ts";
+export { metricRows, PLACE, placeOf } from "./metricRows.ts";
 /** Order statistics. */
 export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
-export { brokenQuotes, listTable } from "./read.ts";
+export { brokenQuotes, linesWithSurplus, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";
+export * from "./sinceEnrolment.ts";
+export { sizes } from "./sizes.ts";
+export * from "./soundness.ts";
 export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
+/** One unit, row by row. */
+export { nearestUnit, rowsOfUnit, unitEnd } from "./trace.ts";
 export { candidates, units } from "./units.ts";

@@ -20,6 +20,10 @@ export const analysedRows = (): Statement => sql`
     coalesce(sum(inside_rows), 0) AS inside_rows
   FROM units`;
 
+/** Analysed units by local day of enrolment and variant. */
+export const analysedByDay = (): Statement => sql`
+  SELECT day, variant, count(*) AS units FROM units GROUP BY day, variant ORDER BY day`;
+
 /** Enrolled units (past the line unknown-variant) by first variant, and of them the switched. */
 export const enrolledByVariant = (unknownVariantLine: number): Statement => sql`
   SELECT variant, count(*) AS units, count(*) FILTER (WHERE switched) AS switched
@@ -33,9 +37,18 @@ export const unitsWithFate = (fate: number, unknownVariantLine: number): Stateme
   WHERE e.line > ${unknownVariantLine}
   GROUP BY e.variant`;
 
-/** First and last enrolment of the analysed. */
-export const enrolmentRange = (analysedLine: number): Statement => sql`
-  SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line = ${analysedLine}`;
+/** First and last enrolment of units on a line or a later one. */
+export const enrolmentRange = (fromLine: number): Statement => sql`
+  SELECT min(enrolled_us) AS first_us, max(enrolled_us) AS last_us FROM enrolments WHERE line >= ${fromLine}`;
+
+/** Of the analysed, those that enrolled in each incident. Gives variant, units<k>. */
+export function unitsInIncidents(incidents: number): Statement {
+  const counts = Array.from(
+    { length: incidents },
+    (_, k) => sql`count(*) FILTER (WHERE ${name(`i${k}`)}) AS ${name(`units${k}`)}`,
+  );
+  return sql`SELECT variant, ${join(counts, ", ")} FROM units GROUP BY variant`;
+}
 
 /** Values that rows hold, rejected ones included, commonest first. */
 export const eventCounts = (limit: number): Statement => sql`

@@ -32,6 +32,15 @@ export const brokenQuotes = (): Statement => sql`
   WHERE error_type = 'UNQUOTED VALUE'
     OR error_type = 'LINE SIZE OVER MAXIMUM' AND (contains(csv_line, chr(10)) OR contains(csv_line, chr(13)))`;
 
+/**
+ * How many lines of a file may end a record with surplus empty cells: they end with a delimiter, and hold as many as there
+ * are columns, or a quote, which can hide that more came on the lines before.
+ */
+export const linesWithSurplus = (delimiter: string, width: number, path: string): Statement => sql`
+  SELECT count(*) AS lines
+  FROM ${lineReader([path], sql`ignore_errors = true`)}
+  WHERE line LIKE ${`%${delimiter}`.repeat(width)} OR suffix(line, ${delimiter}) AND contains(line, '"')`;
+
 const NO_CELL = "\u0001 no cell \u0001";
 const JSON_BLANKS = " \t\r";
 // Without it the reader takes sixteen times the longest line for each piece, more than a small memory limit holds.

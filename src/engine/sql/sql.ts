@@ -28,7 +28,7 @@ export function name(identifier: string): Statement {
 /** Statements joined by a separator; an empty list is an empty statement. */
 export function join(
   items: readonly Statement[],
-  separator: " AND " | " OR " | ", " | "\n" | "\nUNION ALL\n",
+  separator: " AND " | " OR " | " + " | ", " | "\n" | "\nUNION ALL\n",
 ): Statement {
   return statement(items.map(literal).join(separator));
 }

@@ -3,13 +3,15 @@ import { FATE, type Layout, type PartLayout, unitLineIds } from "../layout.ts";
 import type { DayRun, Step } from "../zone.ts";
 import { type Dialect, localDay } from "./dialect.ts";
 import { daysUs, followUpUs } from "./enrolments.ts";
+import { placeOf } from "./metricRows.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /**
  * Stage 7: one row per unit that is analysed, or would be under another reasonable choice.
  * Reads   rows, enrolments
  * Writes  candidates: variant, bucket, analysed, other_way, any_follow_up, first_day (enrolled on the first local day on
- *         which an analysed unit was), before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where
+ *         which an analysed unit was), followed (to the end of its follow-up), day (the local one of enrolment, 0 without time), k<s> (the level of subgroup column s),
+ *         i<k> (enrolled in incident k), before_rows, after_rows, inside_rows; per metric part x<p>, its value, NULL where
  *         the unit is left out; per metric counted<m>, its counted rows, numberless<m>, those of them without a number,
  *         and z<m>, its covariate, NULL where missing
  * Every unit has at least its enrolling row, so the inner join loses none. Units are grouped by the enrolments'
@@ -20,11 +22,11 @@ export function candidates(
   layout: Layout,
   days: readonly Step<DayRun>[],
   firstDay: number | null,
+  levels: readonly Statement[],
+  logEndUs: bigint | null,
   dialect: Dialect,
 ): Statement {
   const analysed = unitLineIds(plan).length - 1;
-  const end = plan.followUp === null ? sql`FALSE` : sql`r.at_us >= e.enrolled_us + ${followUpUs(plan)}`;
-  const place = layout.hasTime ? sql`CASE WHEN r.at_us < e.enrolled_us THEN -1 WHEN ${end} THEN 1 ELSE 0 END` : sql`0`;
   const isShort = plan.followUp !== null && plan.followUp.days < BITS;
   const aggregates = layout.parts.flatMap((part, p) => [
     sql`${aggregate(part, isShort, days, dialect)} AS ${name(`s${p}`)}`,
@@ -45,8 +47,8 @@ export function candidates(
         : sql`count(*) FILTER (WHERE ${join(numberless, " OR ")}) AS ${name(`numberless${m}`)}`,
     ];
   });
-  const isFirstDay =
-    firstDay === null || !layout.hasTime ? sql`FALSE` : sql`${localDay(sql`e.enrolled_us`, days)} = ${firstDay}`;
+  const enrolledOn = layout.hasTime ? localDay(sql`e.enrolled_us`, days) : sql`0`;
+  const isFirstDay = firstDay === null ? sql`FALSE` : sql`${enrolledOn} = ${firstDay}`;
   const values = [
     ...layout.parts.flatMap((part, p) =>
       part.side === "before" ? [] : [sql`CAST(${unitValue(plan, part, p)} AS ${dialect.sumType}) AS ${name(`x${p}`)}`],
@@ -63,6 +65,12 @@ export function candidates(
       sql`${dialect.bucket(sql`e.unit`)} AS bucket`,
       sql`e.line = ${analysed} AS analysed`,
       sql`e.other_way, e.any_follow_up, ${isFirstDay} AS first_day`,
+      plan.followUp === null || logEndUs === null
+        ? sql`FALSE AS followed`
+        : sql`e.enrolled_us + ${followUpUs(plan)} <= ${logEndUs} AS followed`,
+      sql`CAST(${enrolledOn} AS INTEGER) AS day`,
+      ...levels.map((level, s) => sql`${level} AS ${name(`k${s}`)}`),
+      ...layout.incidents.map((_, k) => sql`e.${name(`i${k}`)}`),
       sql`before_rows, after_rows, inside_rows`,
       ...values,
     ])}
@@ -76,7 +84,7 @@ export function candidates(
         ...metricRows,
       ])}
       FROM (
-        SELECT ${list([sql`e.rowid AS id, e.enrolled_us, ${place} AS place`, ...daysBefore(plan), sql`r.*`])}
+        SELECT ${list([sql`e.rowid AS id, e.enrolled_us, ${placeOf(plan, layout)} AS place`, ...daysBefore(plan), sql`r.*`])}
         FROM rows AS r
         JOIN enrolments AS e ON e.unit = r.unit
         WHERE r.fate = ${FATE.seen} AND (e.line = ${analysed} OR e.other_way OR e.any_follow_up)

@@ -16,11 +16,8 @@ export interface Later {
 /** One line a feature; it goes when the feature comes. */
 export const LATER: readonly Later[] = [];
 
-/** Apart from the list, for `Plan` has no field for them: without this they would go unseen. */
-const SUBGROUPS: Later = { of: "plan", path: ["subgroups"], remedy: "Remove it." };
-
 export function laterProblems(plan: Loose, later: readonly Later[]): readonly Problem[] {
-  return [...later, SUBGROUPS].flatMap(({ of, path, value, remedy }) => {
+  return later.flatMap(({ of, path, value, remedy }) => {
     const places = of === "metric" ? items(plan, "metrics").map((metric) => [...metric.path, ...path]) : [path];
     const key = String(path.at(-1));
     return places

@@ -57,7 +57,7 @@ function timeNeeds(plan: Loose): readonly Path[] {
   const covariates = items(plan, "metrics").filter(({ data }) => "days-before" in (mapping(data["adjust-for"]) ?? {}));
   return [
     ...["from", "before"].filter((key) => key in enrolment).map((key): Path => ["enrolment", key]),
-    ...("follow-up" in plan ? [["follow-up"]] : []),
+    ...["follow-up", "incidents"].filter((key) => key in plan).map((key): Path => [key]),
     ...parts(plan).flatMap(({ path, data }) => OF_TIME.filter((key) => key in data).map((key): Path => [...path, key])),
     ...covariates.map(({ path }): Path => [...path, "adjust-for", "days-before"]),
   ];

@@ -1,9 +1,9 @@
 import type { Problem } from "../types.ts";
 import { items, type Loose } from "./loose.ts";
 
-/** Variants, metrics and filters have names of their own, each among its own. */
+/** Variants, metrics, filters and incidents have names of their own, each among its own. */
 export function nameRules(plan: Loose): readonly Problem[] {
-  return ["variants", "metrics", "filters"].flatMap((section) => {
+  return ["variants", "metrics", "filters", "incidents"].flatMap((section) => {
     const named = items(plan, section).filter(({ data }) => typeof data.name === "string");
     return named.flatMap(({ path, data }, i): readonly Problem[] => {
       if (named.findIndex((other) => other.data.name === data.name) === i) return [];

@@ -1,6 +1,8 @@
 import { parse, resetSVGDefIds, View } from "vega";
 import { compile, type TopLevelSpec } from "vega-lite";
 
+import { withoutControls } from "../typeset.ts";
+
 /** An SVG element of our own making: the only text that the page takes as it is. */
 export interface Drawing {
   readonly svg: string;
@@ -65,6 +67,6 @@ function shorten(content: string): string {
   );
 }
 
-function escaped(text: string): string {
-  return text.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
+export function escaped(text: string): string {
+  return withoutControls(text).replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
 }

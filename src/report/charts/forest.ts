@@ -1,6 +1,7 @@
 import type { TopLevelSpec } from "vega-lite";
 import type { Relative } from "../../stats/types.ts";
 import { type LineStyle, theme } from "./theme.ts";
+import { roundTicks } from "./ticks.ts";
 
 /** One contrast of the forest plot, on the relative scale (0.05 = 5%). */
 export interface ForestRow {
@@ -49,18 +50,7 @@ function withTicks(from: number, to: number): ForestAxis {
   const room = to - from || 0.02;
   const low = from - MARGIN * room;
   const high = to + MARGIN * room;
-  const step = roundStep((high - low) / 5);
-  const first = Math.ceil(low / step);
-  const last = Math.floor(high / step);
-  const ticks = Array.from({ length: last - first + 1 }, (_, i) => Number(((first + i) * step).toPrecision(12)));
-  return { low, high, ticks };
-}
-
-/** The next step of 1, 2, 2.5 or 5 times a power of ten. */
-function roundStep(size: number): number {
-  const power = 10 ** Math.floor(Math.log10(size));
-  const factor = [1, 2, 2.5, 5].find((candidate) => candidate * power >= size * 0.999) ?? 10;
-  return factor * power;
+  return { low, high, ticks: roundTicks(low, high, 5) };
 }
 
 /**

@@ -1,5 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
 import type { Histogram } from "../../stats/index.ts";
+import { area, inPixels, letters, line, type Point, strokes } from "./pixels.ts";
 import { theme } from "./theme.ts";
 
 /** One size at which the distribution of the studentised difference was drawn. */
@@ -12,10 +13,6 @@ export interface SamplingRow {
   readonly above: string;
 }
 
-type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
-type Point = Readonly<Record<"x" | "y" | "base" | "group", number>>;
-type Stroke = Readonly<Record<"x" | "y" | "toX" | "toY", number>>;
-type Letters = { readonly x: number; readonly y: number; readonly text: string };
 interface Density {
   readonly at: number;
   readonly density: number;
@@ -59,54 +56,45 @@ export function sampling(
   const tails = outlines.flatMap((points, row) =>
     [-critical, critical].flatMap((limit, side) => place(beyond(points, limit), row, 2 * row + side)),
   );
-  return {
-    $schema: "https://vega.github.io/schema/vega-lite/v6.json",
-    width: WIDTH,
-    height,
-    padding: 0,
-    autosize: "none",
-    background: "transparent",
-    config: { aria: false, view: { stroke: null } },
-    layer: [
-      area(tails),
-      strokes([1, 0], theme.line, [
-        ...bases.map((y) => ({ x: 0, y, toX: WIDTH, toY: y })),
-        ...TICKS.map((at) => ({ x: placed(at), y: last, toX: placed(at), toY: last + 4 })),
+  return inPixels(WIDTH, height, [
+    area(tails),
+    strokes([1, 0], theme.line, [
+      ...bases.map((y) => ({ x: 0, y, toX: WIDTH, toY: y })),
+      ...TICKS.map((at) => ({ x: placed(at), y: last, toX: placed(at), toY: last + 4 })),
+    ]),
+    strokes(
+      [2, 2],
+      theme.line,
+      [-critical, critical].map((at) => ({ x: placed(at), y: HEAD - 3, toX: placed(at), toY: last })),
+    ),
+    line(
+      [4, 2],
+      theme.quiet,
+      rows.flatMap((_, row) => place(curve, row)),
+    ),
+    line(
+      [1, 0],
+      theme.ink,
+      outlines.flatMap((points, row) => place(points, row)),
+    ),
+    letters("center", theme.quiet, [
+      ...[-critical, critical].map((at) => ({ x: placed(at), y: HEAD - 7, text: label(at) })),
+      ...TICKS.map((at) => ({ x: placed(at), y: last + 17, text: label(at) })),
+    ]),
+    letters(
+      "left",
+      theme.ink,
+      rows.flatMap(({ label: size, below }, row) => [
+        { x: 0, y: (bases[row] ?? 0) - ROW + 18, text: size },
+        { x: 0, y: (bases[row] ?? 0) - 9, text: below },
       ]),
-      strokes(
-        [2, 2],
-        theme.line,
-        [-critical, critical].map((at) => ({ x: placed(at), y: HEAD - 3, toX: placed(at), toY: last })),
-      ),
-      line(
-        [4, 2],
-        theme.quiet,
-        rows.flatMap((_, row) => place(curve, row)),
-      ),
-      line(
-        [1, 0],
-        theme.ink,
-        outlines.flatMap((points, row) => place(points, row)),
-      ),
-      letters("center", theme.quiet, [
-        ...[-critical, critical].map((at) => ({ x: placed(at), y: HEAD - 7, text: label(at) })),
-        ...TICKS.map((at) => ({ x: placed(at), y: last + 17, text: label(at) })),
-      ]),
-      letters(
-        "left",
-        theme.ink,
-        rows.flatMap(({ label: size, below }, row) => [
-          { x: 0, y: (bases[row] ?? 0) - ROW + 18, text: size },
-          { x: 0, y: (bases[row] ?? 0) - 9, text: below },
-        ]),
-      ),
-      letters(
-        "right",
-        theme.ink,
-        rows.map(({ above }, row) => ({ x: WIDTH, y: (bases[row] ?? 0) - 9, text: above })),
-      ),
-    ],
-  };
+    ),
+    letters(
+      "right",
+      theme.ink,
+      rows.map(({ above }, row) => ({ x: WIDTH, y: (bases[row] ?? 0) - 9, text: above })),
+    ),
+  ]);
 }
 
 /** Where a value of T lies on the drawing. */
@@ -143,49 +131,4 @@ function beyond(points: readonly Density[], limit: number): Density[] {
   const inside = points.find(({ at }) => at > limit);
   const cut = inside === undefined ? [] : [{ at: limit, density: inside.density }];
   return [...points.filter(({ at }) => at <= limit), ...cut];
-}
-
-const pixels = (field: string) => ({ field, type: "quantitative", scale: null, axis: null }) as const;
-
-function area(points: readonly Point[]): Layer {
-  return {
-    data: { values: [...points] },
-    mark: { type: "area", color: theme.ink, opacity: 0.6 },
-    encoding: {
-      x: pixels("x"),
-      y: pixels("y"),
-      y2: { field: "base" },
-      detail: { field: "group", type: "nominal" },
-      order: { value: 0 },
-    },
-  };
-}
-
-function line(dash: readonly number[], color: string, points: readonly Point[]): Layer {
-  return {
-    data: { values: [...points] },
-    mark: { type: "line", color, strokeWidth: 1, strokeDash: [...dash] },
-    encoding: {
-      x: pixels("x"),
-      y: pixels("y"),
-      detail: { field: "group", type: "nominal" },
-      order: { value: 0 },
-    },
-  };
-}
-
-function strokes(dash: readonly number[], color: string, from: readonly Stroke[]): Layer {
-  return {
-    data: { values: [...from] },
-    mark: { type: "rule", color, strokeWidth: 1, strokeDash: [...dash] },
-    encoding: { x: pixels("x"), y: pixels("y"), x2: { field: "toX" }, y2: { field: "toY" } },
-  };
-}
-
-function letters(align: "left" | "center" | "right", color: string, texts: readonly Letters[]): Layer {
-  return {
-    data: { values: [...texts] },
-    mark: { type: "text", align, baseline: "alphabetic", color, font: theme.font, fontSize: theme.letters - 1 },
-    encoding: { x: pixels("x"), y: pixels("y"), text: { field: "text", type: "nominal" } },
-  };
 }

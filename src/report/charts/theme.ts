@@ -9,6 +9,8 @@ export const theme = {
   line: "var(--line)",
   font: "inherit",
   letters: 13,
+  /** The control's lines, wherever a variant's are drawn with it. */
+  dotted: [1.5, 3],
 } as const;
 
 /** How a variant is told apart: first by its name at the line, then by the line's dashes, then by the square's colour. */

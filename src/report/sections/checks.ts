@@ -1,5 +1,5 @@
 import type { Check, CheckOutcome, Figure } from "../../checks/types.ts";
-import { capital, list, MINUS, number, plural } from "../../words/index.ts";
+import { capital, list, MINUS, number, pCell, plural } from "../../words/index.ts";
 
 /** Section 3: can the data be trusted? Failed checks first, then cautions, the strong ones before the others. */
 export interface ChecksSection {
@@ -18,7 +18,7 @@ export interface CheckText {
   readonly figures: readonly { readonly name: string; readonly value: string }[];
 }
 
-const TITLES: Readonly<Record<string, string>> = {
+export const TITLES: Readonly<Record<string, string>> = {
   allocation: "Groups of the planned size",
   "allocation-by-day": "Groups of the planned size on every day",
   "allocation-by-level": "Groups of the planned size in every subgroup",
@@ -111,7 +111,8 @@ function figureTexts(entries: readonly (readonly [string, Figure])[], path: stri
         name,
       );
     }
-    return [{ name, value: figureText(figure) }];
+    const isP = typeof figure === "number" && (key === "p" || key === "pAdjusted");
+    return [{ name, value: isP ? pCell(figure) : figureText(figure) }];
   });
 }
 

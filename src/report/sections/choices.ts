@@ -1,13 +1,14 @@
 import { type ChoiceRow, type Choices, deciding, type Effect, measure, metricOf } from "../../decision/index.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
-import { capital, type Interval, plain, pText, quoted, type Scale } from "../../words/index.ts";
+import { capital, type Interval, pText, type Scale } from "../../words/index.ts";
 import { type ChoiceMark, choiceAxis, choiceStrip } from "../charts/choices.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
 import { choiceText, unchanged } from "../choice-words.ts";
 import { drawnEffects } from "../drawn.ts";
-import { effectText, NONE, type Signed, verdictText } from "../effect-text.ts";
+import { effectText, pOrNone, type Signed, sixDigits, verdictText } from "../effect-text.ts";
+import { axisLabel, scaleText } from "../figure-words.ts";
 import { controlOf } from "../plan-words.ts";
 
 /** One contrast under other reasonable choices: words and figures as text, each row's line a drawing of its own. */
@@ -79,20 +80,23 @@ async function figure(
     id,
     title: `${effect.metric}${several ? `, ${effect.variant}` : ""}, under other reasonable choices`,
     reading: known.length === 0 ? ONE_AT_A_TIME : readingText(mark !== null),
-    plotHead: scaleText(scale, plan),
+    plotHead: scaleText(scale, controlOf(plan).name),
     rows: tableRows,
     axis:
       known.length === 0
         ? null
         : await draw(forestScale(axis, write), `${id}-axis`, {
-            title: `Axis of the drawing: ${scaleText(scale, plan)}`,
+            title: `Axis of the drawing: ${scaleText(scale, controlOf(plan).name)}`,
             description: `From ${write(axis.low)} to ${write(axis.high)}; the zero line is no difference.`,
           }),
     sentences: sentences(rows, metric, plan),
     numberColumns: NUMBERS.map(([head]) => head),
     numbers: rows.map((row) => ({
       choice: choiceText(row.choice, metric, plan),
-      cells: [...NUMBERS.map(([, pick]) => sixDigits(pick(row))).slice(0, -1), row.agrees ? "yes" : "no"],
+      cells: [
+        ...NUMBERS.map(([, pick, write = sixDigits]) => write(pick(row))).slice(0, -1),
+        row.agrees ? "yes" : "no",
+      ],
     })),
   };
 }
@@ -178,34 +182,17 @@ function readingText(hasMark: boolean): string {
   ].join(" ");
 }
 
-function scaleText(scale: Scale, plan: Plan): string {
-  switch (scale.kind) {
-    case "percent":
-      return `Difference in percent of the level with ${quoted(controlOf(plan).name)}`;
-    case "points":
-      return "Difference in percentage points";
-    case "amount":
-      return scale.unit === null ? "Difference" : `Difference in ${scale.unit}`;
-  }
-}
-
-function axisLabel(tick: number, scale: Scale): string {
-  const size = scale.kind === "amount" ? Math.abs(tick) : Math.abs(tick) * 100;
-  const text = plain(Number(size.toPrecision(3))) + (scale.kind === "percent" ? "%" : "");
-  return tick === 0 ? "0" : `${tick > 0 ? "+" : "\u2212"}${text}`;
-}
-
-const NUMBERS: readonly (readonly [head: string, pick: (row: ChoiceRow) => number | null])[] = [
+const NUMBERS: readonly (readonly [
+  head: string,
+  pick: (row: ChoiceRow) => number | null,
+  write?: (figure: number | null) => string,
+])[] = [
   ["difference", ({ difference }) => difference.estimate],
   ["low", ({ difference }) => difference.low],
   ["high", ({ difference }) => difference.high],
   ["relative", (row) => relativeOf(row)?.estimate ?? null],
   ["low", (row) => relativeOf(row)?.low ?? null],
   ["high", (row) => relativeOf(row)?.high ?? null],
-  ["p", ({ difference }) => difference.p],
+  ["p", ({ difference }) => difference.p, pOrNone],
   ["the same", () => null],
 ];
-
-function sixDigits(figure: number | null): string {
-  return figure === null ? NONE : plain(Number(figure.toPrecision(6)));
-}

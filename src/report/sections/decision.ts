@@ -5,14 +5,17 @@ import {
   type Effect,
   effectSentence,
   guardrailSentence,
+  incidentsInShort,
+  lookSentences,
   nextSentences,
   otherIntervalSentence,
 } from "../../decision/index.ts";
 import type { Plan } from "../../plan/types.ts";
-import { count, list, plural } from "../../words/index.ts";
+import { asSentence, count, list, plural } from "../../words/index.ts";
 import type { ReportInputs } from "../types.ts";
 import { mostImportant, tallyText } from "./checks.ts";
 import { type ForestTable, forestTable } from "./forest.ts";
+import { outcomesOf } from "./incidents.ts";
 
 /** Section 1, the owner's page. */
 export interface DecisionSection {
@@ -36,7 +39,7 @@ export async function decisionSection(inputs: ReportInputs): Promise<DecisionSec
   const undecidable = conclusion.decision === "undecidable";
   return {
     sentence: conclusion.sentence,
-    paragraphs: findings(inputs),
+    paragraphs: [...findings(inputs), ...lookSentences(plan, conclusion)],
     forest: undecidable || effects.length === 0 ? null : await forestTable(effects, plan),
     afterForest: nextSentences(plan, effects, conclusion, inputs.reduction),
     reasons: plan.variants.length > 2 && !undecidable ? conclusion.reasons : [],
@@ -85,14 +88,14 @@ export function answers(inputs: ReportInputs): Answer[] {
   return [
     { question: "Can the data be trusted?", answer: trustText(inputs) },
     { question: "Counted:", answer: countedText(inputs) },
-    ...(limits === null ? [] : [{ question: "Not answered by this test:", answer: ended(limits) }]),
+    ...(inputs.plan.incidents.length === 0
+      ? []
+      : [{ question: "What happened meanwhile:", answer: incidentsInShort(outcomesOf(inputs), isDecided(inputs)) }]),
+    ...(limits === null ? [] : [{ question: "Not answered by this test:", answer: asSentence(limits) }]),
   ];
 }
 
-/** A text from the plan as a sentence of the page. */
-function ended(text: string): string {
-  return /[.!?\u2026]$/.test(text.trimEnd()) ? text : `${text.trimEnd()}.`;
-}
+const isDecided = ({ conclusion }: ReportInputs) => conclusion.decision !== "undecidable";
 
 /** The tally, and the caution that matters most; what stops a decision is told above it already. */
 function trustText(inputs: ReportInputs): string {

@@ -9,11 +9,11 @@ import {
 } from "../../decision/index.ts";
 import type { Amount, Plan, Role } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
-import { capital, plain, planPercent, signedPercent } from "../../words/index.ts";
+import { capital, planPercent, signedPercent } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type ForestAxis, type ForestRow, forestAxis, forestScale, forestStrip } from "../charts/forest.ts";
 import { lineStyle } from "../charts/theme.ts";
-import { type EffectText, effectText, NONE, PURPOSE } from "../effect-text.ts";
+import { type EffectText, effectText, PURPOSE, pOrNone, sixDigits } from "../effect-text.ts";
 import { controlOf } from "../plan-words.ts";
 
 /** The forest plot as a table: words and figures are text of the page, each row's line is a drawing of its own. */
@@ -109,7 +109,7 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
     numbers: ordered.map((effect) => ({
       metric: effect.metric,
       variant: effect.variant,
-      cells: NUMBERS.map(([, pick]) => sixDigits(pick(effect))),
+      cells: NUMBERS.map(([, pick, write = sixDigits]) => write(pick(effect))),
     })),
   };
 }
@@ -148,7 +148,11 @@ function adjustedTexts({ metrics }: Plan, effects: readonly Effect[]): string[] 
     .map((metric) => `${metric.name}: levels and difference are adjusted for ${covariateInWords(metric)}.`);
 }
 
-const NUMBERS: readonly (readonly [head: string, pick: (effect: Effect) => number | null])[] = [
+const NUMBERS: readonly (readonly [
+  head: string,
+  pick: (effect: Effect) => number | null,
+  write?: (figure: number | null) => string,
+])[] = [
   ["control", (effect) => deciding(effect).control.mean],
   ["variant", (effect) => deciding(effect).variant.mean],
   ["difference", (effect) => deciding(effect).difference.estimate],
@@ -157,15 +161,11 @@ const NUMBERS: readonly (readonly [head: string, pick: (effect: Effect) => numbe
   ["relative", (effect) => relativeOf(deciding(effect))?.estimate ?? null],
   ["low", (effect) => relativeOf(deciding(effect))?.low ?? null],
   ["high", (effect) => relativeOf(deciding(effect))?.high ?? null],
-  ["p", (effect) => deciding(effect).difference.p],
+  ["p", (effect) => deciding(effect).difference.p, pOrNone],
 ];
 
 function relativeOf({ relative }: Effect["contrast"]): Relative | null {
   return "absent" in relative ? null : relative;
-}
-
-function sixDigits(figure: number | null): string {
-  return figure === null ? NONE : plain(Number(figure.toPrecision(6)));
 }
 
 /**

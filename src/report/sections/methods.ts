@@ -1,67 +1,41 @@
 import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
-import type { InputFile } from "../../engine/types.ts";
+import type { Reduction } from "../../engine/types.ts";
 import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
-import { count, list, planPercent } from "../../words/index.ts";
+import { list, planPercent } from "../../words/index.ts";
 import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
+import { type FromWhat, fromWhat } from "./from-what.ts";
+import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
-export interface MethodsSection {
-  readonly methods: readonly { readonly name: string; readonly how: string; readonly source: string }[];
-  readonly files: readonly FileText[];
-  readonly lists: readonly FileText[];
-  readonly facts: readonly { readonly name: string; readonly value: string }[];
+export interface MethodsSection extends FromWhat {
+  readonly methods: readonly Method[];
   readonly cautions: readonly string[];
-  readonly planText: string;
 }
-export interface FileText {
+export interface Method {
+  /** What a term of the report links to. */
+  readonly id: string;
   readonly name: string;
-  readonly rows: string;
-  readonly bytes: string;
-  readonly fingerprint: string;
+  readonly how: string;
+  readonly source: string;
 }
 
 export function methodsSection(inputs: ReportInputs): MethodsSection {
-  const { plan, planText, reduction, effects, choices } = inputs;
+  const { plan, reduction, effects, choices } = inputs;
   return {
-    methods: methods(plan, effects, choices),
-    files: reduction.inputs.map(fileText),
-    lists: reduction.lists.map(fileText),
-    facts: facts(inputs),
+    methods: methods(plan, effects, choices, reduction),
     cautions: cautions(plan),
-    planText,
+    ...fromWhat({
+      ...inputs,
+      more: [
+        ["Made from", inputs.fromCells === true ? FROM_CELLS : null],
+        ["cells.json, SHA-256", inputs.cellsSha256 ?? null],
+        [REPLACES, inputs.rerun?.previous.sha256 ?? null],
+        ["The rule, kept before the start", registeredText(plan)],
+      ],
+    }),
   };
-}
-
-function fileText({ name, rows, bytes, sha256 }: InputFile): FileText {
-  return { name, rows: count(rows), bytes: count(bytes), fingerprint: sha256 };
-}
-
-function facts({ plan, planSha256, version, reduction: { engine }, ...of }: ReportInputs) {
-  const { owner, link, ended, notes, decided } = plan.texts;
-  const decision =
-    decided === null
-      ? null
-      : [decided.what, decided.by && `by ${decided.by}`, decided.on && `on ${decided.on}`, decided.because]
-          .filter((part) => part !== null && part !== "")
-          .join(", ");
-  const known: readonly (readonly [string, string | null])[] = [
-    ["Plan, SHA-256", planSha256],
-    ["Made from", of.fromCells === true ? FROM_CELLS : null],
-    ["cells.json, SHA-256", of.cellsSha256 ?? null],
-    [REPLACES, of.rerun?.previous.sha256 ?? null],
-    ["The rule, kept before the start", registeredText(plan)],
-    ["closeout", version],
-    ["Engine", `${engine.name} ${engine.version}`],
-    ["Days and times", plan.timezone],
-    ["Owner", owner],
-    ["Link", link],
-    ["Why it ended", ended],
-    ["Decided", decision],
-    ["Notes", notes],
-  ];
-  return known.flatMap(([name, value]) => (value === null || value === "" ? [] : [{ name, value }]));
 }
 
 /** Whether the rule is the one that was kept before the start; null where none was. */
@@ -75,7 +49,12 @@ function registeredText(plan: Plan): string | null {
 }
 
 /** Only what this report uses. */
-function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choices[]): MethodsSection["methods"] {
+function methods(
+  plan: Plan,
+  effects: readonly Effect[],
+  choices: readonly Choices[],
+  reduction: Reduction,
+): MethodsSection["methods"] {
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -90,7 +69,7 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
   const simply = effects.some(
     ({ role, contrast, summary }) => role !== "secondary" && (summary === "quantile" || hasNoSpread(contrast)),
   );
-  const all: readonly (MethodsSection["methods"][number] & { readonly when: boolean })[] = [
+  const all: readonly (Omit<Method, "id"> & { readonly when: boolean })[] = [
     {
       when: [...used].some((method) => method !== "quantile"),
       name: "Difference",
@@ -137,11 +116,12 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
       source: "Welch 1947, Biometrika 34, 28-35; Satterthwaite 1946",
     },
     {
-      when: others > 1,
+      when: others > 1 && plan.looks === null,
       name: "Several variants",
       how: `Each variant is compared with the control. For what decides and what must not get worse, the ${others} intervals hold together with ${confidence} confidence: they share the control, and their critical value allows for that. p is adjusted in one step by the same distribution; Holm\u2019s, by several steps, stands beside it and does not decide.${simply ? " Where that distribution is not to be had, the error is shared out evenly over the variants: for quantiles, and where a group has no spread." : ""}`,
       source: `Dunnett 1955, Journal of the American Statistical Association 50, 1096-1121; by Dunnett 1989, Applied Statistics 38, 564-579; Holm 1979, Scandinavian Journal of Statistics 6, 65-70${simply ? "; Dunn 1961, Journal of the American Statistical Association 56, 52-64" : ""}`,
     },
+    ...lookMethods(plan, others, confidence),
     {
       when: primaries > 1 && !anyIsEnough(plan),
       name: "Several deciding measures",
@@ -190,13 +170,37 @@ function methods(plan: Plan, effects: readonly Effect[], choices: readonly Choic
         "ICH E9(R1), sensitivity analysis; Campbell, Pennello and Yue 2011, Journal of Biopharmaceutical Statistics 21, 180-195, tipping point",
     },
     {
+      when: reduction.metrics.some(({ sizes }) => sizes !== null),
+      name: "Values by size",
+      how: `How many ${many} have a value in each of four steps to every doubling, exact counts, zero apart. Drawn over the width of the step, so that equal areas are equal numbers; the tails add them up from the far end.`,
+      source: "Pareto 1896, on the tail on scales of ratios; the steps are this tool\u2019s",
+    },
+    {
+      when: reduction.metrics.some(({ covariate }) => covariate !== null),
+      name: "Groups before enrolment",
+      how: "The standardised difference: of the means, over the root of the mean of both variances. It tells whether groups are alike enough and does not grow with their size; the check of section 3 tells whether chance made it.",
+      source: "Austin 2009, Statistics in Medicine 28, 3083-3107; CONSORT 2010 item 15",
+    },
+    {
       when: true,
       name: "Who was counted",
       how: `Each row and each ${plan.unitCalled.one} ends on one line of section 4. A ${plan.unitCalled.one} is counted in the group of its first enrolment, whatever it did later; one without events counts with 0.`,
       source: "CONSORT 2010 flow diagram; ICH E9(R1)",
     },
   ];
-  return all.filter(({ when }) => when).map(({ name, how, source }) => ({ name, how, source }));
+  return all
+    .filter(({ when }) => when)
+    .map(({ name, how, source }) => ({ id: idOf(name), name, how, source: ranges(source) }));
+}
+
+/** Pages of a journal: "221–228". */
+function ranges(source: string): string {
+  return source.replace(/(\d)-(?=\d)/g, "$1\u2013");
+}
+
+/** "Relative difference" is `method-relative-difference`. */
+function idOf(name: string): string {
+  return `method-${name.toLowerCase().replace(/[^a-z]+/g, "-")}`;
 }
 
 function hasNoSpread({ control, variant }: Effect["contrast"]): boolean {
@@ -210,7 +214,7 @@ function cautions(plan: Plan): string[] {
     "Statistical evidence is not the whole decision: cost, law, strategy and the people concerned are not in the figures.",
     "Experiments on people need the consent and the privacy that the law of the place asks for; event logs are personal data.",
     "Not for clinical, safety or other regulated decisions: these need a registered protocol and a licensed practitioner.",
-    "The size of this test was to be fixed beforehand. Looking at the result before the planned end, and stopping when it pleases, makes false results more frequent than stated.",
+    lookCaution(plan),
     secondary.length === 0
       ? "What was not named beforehand as deciding can suggest; it does not decide."
       : `Measures for information suggest, they do not decide: ${list(secondary)}.`,

@@ -1,14 +1,15 @@
 import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
-import type { Metric, Plan } from "../../plan/types.ts";
+import type { Metric, Plan, Role, Summary } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, percentile, plain, plural, pText } from "../../words/index.ts";
+import { capital, count, type Interval, list, percentile, plain, plural } from "../../words/index.ts";
 import {
   bareText,
   effectText,
   levelsText,
   NONE,
   PURPOSE,
+  pOrNone,
   type Signed,
   sideBySide,
   verdictText,
@@ -21,6 +22,10 @@ export interface MetricSection {
   readonly id: string;
   readonly name: string;
   readonly purpose: string;
+  /** Lines of Methods that the heads of its tables link to. */
+  readonly purposeTerm: string;
+  readonly differenceTerm: string;
+  readonly familyTerm: string;
   readonly measure: string;
   readonly rule: string;
   readonly notes: readonly string[];
@@ -45,6 +50,8 @@ export interface EffectRow {
   /** "Holm 0.0012"; "" where nothing stands beside. */
   readonly pBeside: string;
   readonly method: string;
+  /** The line of Methods that explains it. */
+  readonly term: string;
   readonly verdict: string;
   readonly beside: readonly string[];
 }
@@ -57,6 +64,15 @@ export const METHOD: Readonly<Record<Method, string>> = {
   quantile: "order statistics",
 };
 
+/** The line of Methods on each. */
+const TERM: Readonly<Record<Method, string>> = {
+  normal: "method-difference",
+  welch: "method-small-groups",
+  score: "method-shares",
+  "skew-corrected": "method-corrected-interval",
+  quantile: "method-quantiles",
+};
+
 export function metricSections(plan: Plan, reduction: Reduction, effects: readonly Effect[]): MetricSection[] {
   return plan.metrics.map((metric, i) => {
     const own = effects.filter((effect) => effect.metric === metric.name);
@@ -64,6 +80,9 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       id: `metric-${i + 1}`,
       name: metric.name,
       purpose: PURPOSE[metric.role],
+      purposeTerm: PURPOSE_TERM[metric.role],
+      differenceTerm: DIFFERENCE_TERM[metric.summary],
+      familyTerm: familyTerm(metric, plan),
       measure: measureText(metric, plan),
       rule: ruleText(metric),
       notes: notes(metric, plan, reduction, own),
@@ -76,6 +95,23 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
   });
 }
 
+const PURPOSE_TERM: Readonly<Record<Role, string>> = {
+  primary: "method-several-deciding-measures",
+  guardrail: "method-what-must-not-get-worse",
+  secondary: "method-measures-for-information",
+};
+const DIFFERENCE_TERM: Readonly<Record<Summary, string>> = {
+  mean: "method-difference",
+  proportion: "method-shares",
+  "ratio-of-totals": "method-ratio-of-totals",
+  quantile: "method-quantiles",
+};
+
+function familyTerm({ role }: Metric, plan: Plan): string {
+  if (role === "secondary") return "method-measures-for-information";
+  return plan.variants.length > 2 ? "method-several-variants" : "method-several-deciding-measures";
+}
+
 /** The family that a metric's p are adjusted for, where it holds more than one test. */
 function adjustedFor(metric: Metric, plan: Plan, effects: readonly Effect[]): string | null {
   const variants = plan.variants.length - 1;
@@ -86,8 +122,12 @@ function adjustedFor(metric: Metric, plan: Plan, effects: readonly Effect[]): st
     return tests > 1 ? `${tests} tests for information` : null;
   }
   const overPrimaries = metric.role === "primary" && anyIsEnough(plan);
-  if (variants > 1) return overPrimaries ? "the variants and deciding measures" : `${variants} variants`;
-  return overPrimaries ? "the deciding measures" : null;
+  const over = [
+    ...(plan.looks === null ? [] : [`${plan.looks.planned.length} looks`]),
+    ...(variants > 1 ? [overPrimaries ? "the variants" : `${variants} variants`] : []),
+    ...(overPrimaries ? [variants > 1 ? "deciding measures" : "the deciding measures"] : []),
+  ];
+  return over.length === 0 ? null : list(over);
 }
 
 function ruleText(metric: Metric): string {
@@ -203,17 +243,14 @@ function effectRow(effect: Effect, metric: Metric, plan: Plan): EffectRow {
     variant: effect.variant,
     difference: text.bare,
     relative: "absent" in relative ? { estimate: "not shown", interval: "" } : (text.relative ?? text.bare),
-    p: pCell(difference.p),
-    pAdjusted: pCell(effect.pAdjusted),
-    pBeside: effect.pHolm === null ? "" : `Holm ${pCell(effect.pHolm)}`,
+    p: pOrNone(difference.p),
+    pAdjusted: pOrNone(effect.pAdjusted),
+    pBeside: effect.pHolm === null ? "" : `Holm ${pOrNone(effect.pHolm)}`,
     method: METHOD[difference.method],
+    term: TERM[difference.method],
     verdict: verdictText(effect, plan),
     beside: besideTexts(effect, metric),
   };
-}
-
-function pCell(p: number | null): string {
-  return p === null ? NONE : pText(p).replace(/^p (= )?/, "");
 }
 
 function besideTexts(effect: Effect, metric: Metric): string[] {

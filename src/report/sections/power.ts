@@ -8,6 +8,7 @@ import {
   metricOf,
   nextTest,
   questionOf,
+  questionOfNextTest,
   ruleInWords,
   ruleOf,
   type Size,
@@ -77,17 +78,17 @@ function powerTable(plan: Plan, reduction: Reduction, effects: readonly Effect[]
 
 function columnsOf(plan: Plan, counted: number): Column[] {
   const { plannedUnits } = plan;
-  const foundWith = (units: number) => (effect: Effect) => {
-    const question = questionOf(effect, plan, counted);
+  const foundWith = (units: number, ask: typeof questionOf) => (effect: Effect) => {
+    const question = ask(effect, plan, counted);
     return question === null || isAbsent(question) ? NONE : ofHundred(powerWith(question, units));
   };
   const planned: Column[] =
     plannedUnits === null || plannedUnits === counted
       ? []
-      : [{ head: `Found with ${count(plannedUnits)}, as planned`, cell: foundWith(plannedUnits) }];
+      : [{ head: `Found with ${count(plannedUnits)}, as planned`, cell: foundWith(plannedUnits, questionOfNextTest) }];
   return [
     { head: "Asked for, or limit", cell: (effect) => askedText(metricOf(effect, plan)) },
-    { head: `Found with ${count(counted)}, as counted`, cell: foundWith(counted) },
+    { head: `Found with ${count(counted)}, as counted`, cell: foundWith(counted, questionOf) },
     ...planned,
     {
       head: `${capital(plan.unitCalled.many)} for ${casesText(plan.decision.power)}`,

@@ -9,7 +9,14 @@ import {
 } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
-import { type BootstrapT, isNotDrawn, type NotDrawn, normalUpperTail, type Resampled } from "../../stats/index.ts";
+import {
+  type BootstrapT,
+  drawsReach,
+  isNotDrawn,
+  type NotDrawn,
+  normalUpperTail,
+  type Resampled,
+} from "../../stats/index.ts";
 import {
   atLeast,
   capital,
@@ -93,6 +100,12 @@ function drawnNotes(effect: Effect, plan: Plan): string[] {
   if (effect.resampled === null) return [];
   const { bootstrap, randomisation } = effect.resampled;
   if (isNotDrawn(bootstrap)) return [notDrawnText(bootstrap, plan)];
+  const critical = effect.normality?.critical;
+  if (critical !== undefined && !drawsReach(2 * normalUpperTail(critical), bootstrap.draws)) {
+    return [
+      `No interval is taken from the ${count(bootstrap.draws)} draws: this look\u2019s boundary lies farther out than they reach.`,
+    ];
+  }
   const metric = metricOf(effect, plan);
   const { scale, words } = absolute(effect, metric);
   const estimate = deciding(effect).difference.estimate ?? (bootstrap.low + bootstrap.high) / 2;
@@ -143,10 +156,13 @@ function unitNotes({ normality }: Effect, { unitCalled: { one, many } }: Plan, u
   return [`${enough} ${rules}`, ...single];
 }
 
+/** Beyond it the limits of an early look would stand at the drawing's edge, or past it. */
+const FARTHEST_DRAWN = 4.6;
+
 async function figure(effect: Effect, plan: Plan, id: string): Promise<SamplingFigure | null> {
   const shown = drawnRows(effect.resampled);
   const critical = effect.normality?.critical;
-  if (critical === undefined || shown.length === 0) return null;
+  if (critical === undefined || critical > FARTHEST_DRAWN || shown.length === 0) return null;
   const { many } = plan.unitCalled;
   const limit = fixed(critical, 2);
   const bootstrap = effect.resampled?.bootstrap;

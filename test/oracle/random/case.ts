@@ -4,10 +4,12 @@ import { planFromYaml } from "../plan.ts";
 import { clockOf } from "../time.ts";
 import type { Lists, RawFile } from "../types.ts";
 import { type Dice, diceOf } from "./dice.ts";
+import { withIncidents } from "./incidents.ts";
 import { drawLog, type RandomSource } from "./log.ts";
 import { drawPlan, type RandomList, reordered } from "./plan.ts";
 import { withQuantiles } from "./quantiles.ts";
 import { drawShape, type Shape } from "./shape.ts";
+import { withSubgroups } from "./subgroups.ts";
 import { type Form, writeList, writeLog } from "./write.ts";
 import { type Piece, planText } from "./yaml.ts";
 
@@ -24,7 +26,9 @@ export function randomCase(seed: number): RandomCase {
   const dice = diceOf(seed);
   // Dice of their own, so that the other draws of a seed stay what they were.
   const few = drawShape(dice);
-  const { plan: drawn, shape } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
+  const { plan: plain, shape } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
+  const split = withSubgroups(diceOf(seed + 4_000_000), plain, few);
+  const drawn = withIncidents(diceOf(seed + 5_000_000), split, shape);
   const logFirst = dice.chance(0.5);
   const columns = shape.sources.map(({ names }) => columnsPiece(dice, names));
   const plan = (patterns: readonly string[]) => {

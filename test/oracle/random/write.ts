@@ -80,10 +80,13 @@ function fileText(dice: Dice, source: RandomSource, form: Form): string {
 
 function quotedLines(dice: Dice, { columns, rows }: RandomSource, separator: string): string[] {
   const line = (row: RandomRow) => {
-    if (row === null)
-      return Array(columns.length + dice.pick([-1, 1]))
+    if (row === null) {
+      // a cell too few, one too many, or an empty one too many
+      const more = dice.pick([-1, 1, 0]);
+      return `${Array(columns.length + more)
         .fill("zzz")
-        .join(separator);
+        .join(separator)}${more === 0 ? separator : ""}`;
+    }
     return columns.map((column) => cellText(dice, row[column] ?? null, separator)).join(separator);
   };
   return [columns.map((column) => cellText(dice, column, separator)).join(separator), ...rows.map(line)];

@@ -143,8 +143,19 @@ export const COMBINATIONS: readonly WrongPlan[] = [
     ],
   },
   {
-    title: "subgroups, which a plan cannot hold yet",
-    plan: { subgroups: "«subgroups»: [country]" },
-    says: [["", "subgroups is not built yet. Remove it."]],
+    title: "subgroups by what tells units, rows, arms or moments apart",
+    plan: {
+      log: "log: [{files: a.csv, columns: {unit: visitor, time: at, event: event, variant: arm, event-id: id}}]",
+      subgroups: "subgroups: [country, «visitor», event, «arm», «id», «at»]",
+    },
+    says: (["unit", "variant", "event-id", "time"] as const).map((role, i) => [
+      `subgroups, number ${[2, 4, 5, 6][i]}`,
+      `This is the column of the ${role}, which makes no subgroups. Name another, or remove it.`,
+    ]),
+  },
+  {
+    title: "a subgroup column named twice",
+    plan: { subgroups: "subgroups: [country, platform, «country»]" },
+    says: [["subgroups, number 3", "country is named twice. Remove one of the two."]],
   },
 ];

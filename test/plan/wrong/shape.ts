@@ -52,10 +52,10 @@ export const SHAPE: readonly WrongPlan[] = [
       ],
     ],
   },
-  ...["looks", "incidents", "asked-afterwards", "engine"].map((key): WrongPlan => {
+  ...["asked-afterwards", "engine"].map((key): WrongPlan => {
     const known =
       "experiment, question, unit-called, log, timezone, enrolment, variants, ended, follow-up, metrics, filters, " +
-      "subgroups, decision, planned, forecast, registered, owner, link, limits, notes, decided";
+      "incidents, subgroups, decision, planned, looks, forecast, registered, owner, link, limits, notes, decided";
     return {
       title: `${key}, which a later version knows`,
       plan: { x: `«${key}»: {}` },

@@ -1,0 +1,138 @@
+import type { Page } from "../page.ts";
+import type { ChoicesFigure } from "../sections/choices.ts";
+import type { DistributionFigure } from "../sections/distribution.ts";
+import type { FlowFigure, FlowStep } from "../sections/flow.ts";
+import type { ForestTable } from "../sections/forest.ts";
+import type { SamplingFigure } from "../sections/sampling.ts";
+import { type Sheet, type SheetRow, sheetSvg } from "./sheet.ts";
+
+export interface FigureFile {
+  readonly name: string;
+  readonly text: string;
+}
+
+/** Every figure of the page as a file of its own, from the same drawings and words. */
+export function figureFiles(page: Page): FigureFile[] {
+  const { decision, flow, metrics } = page;
+  return [
+    ...(decision.forest === null ? [] : [file("forest", forestSheet(decision.forest))]),
+    file("flow", flowSheet(flow)),
+    ...metrics.flatMap(({ distribution, sampling, choices }) => [
+      ...(distribution === null ? [] : [file(distribution.id, distributionSheet(distribution))]),
+      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [file(id, samplingSheet(figure))])),
+      ...choices.filter(({ axis }) => axis !== null).map((figure) => file(figure.id, choicesSheet(figure))),
+    ]),
+  ];
+}
+
+function file(id: string, sheet: Sheet): FigureFile {
+  return { name: `figures/${id}.svg`, text: sheetSvg(sheet) };
+}
+
+const [NAME, PLOT, FIGURES, ASKED] = [0, 300, 620, 815] as const;
+const PLOT_WIDTH = 300;
+const [NAME_ROOM, FIGURES_ROOM, ASKED_ROOM] = [46, 29, 22] as const;
+
+function forestSheet(forest: ForestTable): Sheet {
+  const zero = { drawing: forest.zeroLine, x: PLOT, width: PLOT_WIDTH, cut: true };
+  const rows = forest.groups.flatMap(({ purpose, measures }): SheetRow[] => [
+    { height: 26, texts: [{ x: NAME, text: purpose, look: "group" }], drawings: [zero] },
+    ...measures.flatMap(({ metric, several, rows }): SheetRow[] => [
+      ...(several ? [{ height: 24, texts: [{ x: NAME, text: metric, room: NAME_ROOM }], drawings: [zero] }] : []),
+      ...rows.map(
+        (row): SheetRow => ({
+          height: 28,
+          texts: [
+            { x: NAME + (several ? 14 : 0), text: several ? row.variant : metric, room: NAME_ROOM - 2 },
+            { x: FIGURES, text: `${row.estimate} ${row.interval}`, room: FIGURES_ROOM },
+            { x: ASKED, text: row.asked, look: "quiet", room: ASKED_ROOM },
+          ],
+          drawings: row.drawing === null ? [] : [{ drawing: row.drawing, x: PLOT, width: PLOT_WIDTH, cut: true }],
+        }),
+      ),
+    ]),
+  ]);
+  const axis: SheetRow[] = forest.anyDrawn
+    ? [{ height: 26, texts: [], drawings: [{ drawing: forest.axis, x: PLOT, width: PLOT_WIDTH, cut: false }] }]
+    : [];
+  return { title: forest.title, note: forest.reading, rows: [...rows, ...axis] };
+}
+
+function choicesSheet({ title, reading, rows, axis }: ChoicesFigure): Sheet {
+  const lines = rows.map(
+    (row): SheetRow => ({
+      height: 26,
+      texts: [
+        { x: NAME, text: row.choice, room: NAME_ROOM, look: row.isPlanned ? "strong" : "plain" },
+        { x: FIGURES, text: `${row.estimate} ${row.interval}`.trimEnd(), room: FIGURES_ROOM },
+        { x: ASKED, text: row.stands, look: "quiet", room: ASKED_ROOM },
+      ],
+      drawings: row.drawing === null ? [] : [{ drawing: row.drawing, x: PLOT, width: PLOT_WIDTH, cut: true }],
+    }),
+  );
+  const last: SheetRow[] =
+    axis === null
+      ? []
+      : [{ height: 26, texts: [], drawings: [{ drawing: axis, x: PLOT, width: PLOT_WIDTH, cut: false }] }];
+  return { title, note: reading, rows: [...lines, ...last] };
+}
+
+function samplingSheet({ caption, reading, drawing }: SamplingFigure): Sheet {
+  return {
+    title: caption,
+    note: reading,
+    rows: [{ height: 280, texts: [], drawings: [{ drawing, x: 0, width: 340, cut: false }] }],
+  };
+}
+
+const SHAPE_WIDTH = 340;
+const SECOND = 460;
+
+function distributionSheet({ caption, arms, axis, tails, tailsHead, reading }: DistributionFigure): Sheet {
+  const outlines = arms.flatMap(({ variant, note, drawing }): SheetRow[] => [
+    { height: 22, texts: [{ x: 0, text: `${variant}: ${note}`, room: 58 }], drawings: [] },
+    { height: 64, texts: [], drawings: [{ drawing, x: 0, width: SHAPE_WIDTH, cut: false }] },
+  ]);
+  const [first, ...others] = outlines;
+  const beside: SheetRow = {
+    height: first?.height ?? 22,
+    texts: [...(first?.texts ?? []), { x: SECOND, text: tailsHead, look: "quiet", room: 60 }],
+    drawings: [],
+  };
+  const withTails = others.map((row, i) =>
+    i === 0
+      ? { ...row, drawings: [...row.drawings, { drawing: tails, x: SECOND, width: SHAPE_WIDTH, cut: false }] }
+      : row,
+  );
+  const foot = { height: Math.max(28, 100 - 86 * (arms.length - 1)), texts: [] };
+  return {
+    title: caption,
+    note: reading,
+    rows: [beside, ...withTails, { ...foot, drawings: [{ drawing: axis, x: 0, width: SHAPE_WIDTH, cut: false }] }],
+  };
+}
+
+const [WORDS, UNITS, SHARE] = [28, 480, 560] as const;
+
+function flowSheet({ caption, trunk, arms, stems }: FlowFigure): Sheet {
+  const line = (step: FlowStep): SheetRow => ({
+    height: 26,
+    texts: [
+      { x: WORDS, text: step.text, look: step.total ? "strong" : "quiet", room: 60 },
+      { x: UNITS, text: step.units, look: step.total ? "strong" : "plain", end: true },
+      ...(step.share === "" ? [] : [{ x: SHARE, text: step.share, look: "quiet" as const, end: true }]),
+    ],
+    drawings: [{ drawing: stems[step.stem], x: 0, width: 24, cut: true }],
+  });
+  return {
+    title: caption,
+    note: "",
+    rows: [
+      ...trunk.map(line),
+      ...arms.flatMap(({ variant, steps }): SheetRow[] => [
+        { height: 34, texts: [{ x: 0, text: variant, look: "group", room: 80 }], drawings: [] },
+        ...steps.map(line),
+      ]),
+    ],
+  };
+}

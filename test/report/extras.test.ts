@@ -1,0 +1,168 @@
+import { mkdir, mkdtemp, readdir, readFile, rm, writeFile } from "node:fs/promises";
+import { tmpdir } from "node:os";
+import path from "node:path";
+import { afterEach, beforeEach, describe, expect, it } from "vitest";
+import { keepExtras } from "../../src/report/extras.ts";
+import { renderReport } from "../../src/report/index.ts";
+import { cssText } from "../../src/report/render.ts";
+import type { ExtraFile } from "../../src/report/types.ts";
+import { adopt, notSettled, several, undecidable } from "./cases.ts";
+import { everyCase } from "./every.ts";
+import { tagsOf, textOf } from "./markup.ts";
+
+async function extrasOf(inputs: typeof adopt): Promise<Map<string, string>> {
+  return new Map((await renderReport(inputs)).extras().map(({ name, text }) => [name, text]));
+}
+const get = (files: Map<string, string>, name: string) => files.get(name) ?? `no ${name}`;
+
+describe.each(everyCase)("what --figures adds to the report of the case %s", async (_, inputs) => {
+  const files = await extrasOf(inputs);
+  const svgs = [...files].filter(([name]) => name.endsWith(".svg"));
+
+  it("has page one, the line of the decision, and the figures", () => {
+    expect([...files.keys()].filter((name) => !name.startsWith("figures/"))).toEqual(["page-one.html", "decision.csv"]);
+    expect(files.has("figures/flow.svg")).toBe(true);
+    expect(files.has("figures/forest.svg")).toBe(
+      inputs.conclusion.decision !== "undecidable" && inputs.effects.length > 0,
+    );
+  });
+
+  it.each(svgs)("gives %s as one drawing that asks for nothing and runs nothing", (_name, svg) => {
+    expect(svg).toMatch(/^<svg xmlns="http:\/\/www\.w3\.org\/2000\/svg" viewBox="0 0 \d+ [\d.]+" width="\d+"/);
+    const tags = tagsOf(svg);
+    const known = "svg title desc rect g path line text".split(" ");
+    expect(tags.map(({ name }) => name).filter((name) => !known.includes(name))).toEqual([]);
+    expect(
+      tags.flatMap(({ attributes }) => [...attributes.keys()]).filter((key) => /^(on|href|src|xlink)/i.test(key)),
+    ).toEqual([]);
+    expect(svg).not.toMatch(/NaN|undefined|url\((?!#)/);
+    const ids = tags.flatMap(({ attributes }) => attributes.get("id") ?? []);
+    expect(new Set(ids).size).toBe(ids.length);
+    const open: string[] = [];
+    for (const tag of tags) {
+      if (tag.closing) expect(open.pop()).toBe(tag.name);
+      else if (!tag.empty) open.push(tag.name);
+    }
+    expect(open).toEqual([]);
+  });
+
+  it("has a page one without links to pages that are not there", () => {
+    const tags = tagsOf(get(files, "page-one.html"));
+    const ids = tags.flatMap(({ attributes }) => attributes.get("id") ?? []);
+    const links = tags.flatMap(({ attributes }) => attributes.get("href") ?? []);
+    expect(links.filter((href) => !ids.includes(href.slice(1)))).toEqual([]);
+    expect(tags.some(({ name }) => name === "script" || name === "details")).toBe(false);
+  });
+});
+
+describe("page one alone", () => {
+  it("says what the report says first, and whose it is", async () => {
+    const { html, json } = await renderReport(adopt);
+    const text = textOf(get(await extrasOf(adopt), "page-one.html"));
+    expect(text).toContain(json.conclusion.sentence.replace(/"([^"]*)"/g, "\u201c$1\u201d"));
+    expect(text).toMatch(/Report [0-9a-f]{4} [0-9a-f]{4}, closeout/);
+    expect(textOf(html)).toContain(text.slice(text.indexOf("Asked for"), text.indexOf("Asked for") + 200));
+  });
+
+  it("has as many rows of the forest plot as a sheet holds, and says how many more there are", async () => {
+    const long = { ...several, effects: Array.from({ length: 4 }, () => several.effects).flat() };
+    const html = get(await extrasOf(long), "page-one.html");
+    const rows = html.match(/class="figures" role="cell"/g)?.length ?? 0;
+    expect(rows).toBeGreaterThanOrEqual(3);
+    expect(rows).toBeLessThan(20);
+    expect(textOf(html)).toContain(`The report has ${long.effects.length - rows} more rows.`);
+  });
+
+  it("has all rows where they fit", async () => {
+    const html = get(await extrasOf(adopt), "page-one.html");
+    expect(html.match(/class="figures" role="cell"/g)).toHaveLength(adopt.effects.length);
+    expect(textOf(html)).not.toContain("The report has");
+  });
+});
+
+describe("decision.csv", () => {
+  const cells = async (inputs: typeof adopt) =>
+    get(await extrasOf(inputs), "decision.csv")
+      .split("\r\n")[1]
+      ?.split(",") ?? [];
+
+  it("has one line: experiment, dates, decision, estimate with its interval, fingerprint", async () => {
+    const line = await cells(adopt);
+    expect(line.slice(0, 6)).toEqual([
+      "Fare calendar on the search page",
+      "2026-03-02",
+      "2026-03-15",
+      "adopt",
+      "calendar",
+      "Booked",
+    ]);
+    // PAGES: 10.0% more, 6.5% to 13.7%
+    expect(line.slice(6, 9).map((figure) => (100 * Number(figure)).toFixed(1))).toEqual(["10.0", "6.5", "13.7"]);
+    expect(line[9]).toBe("relative");
+    expect(line[10]).toMatch(/^[0-9a-f]{64}$/);
+  });
+
+  it("has an estimate where nothing is settled, and none where nothing can be decided", async () => {
+    expect((await cells(notSettled))[3]).toBe("not-settled");
+    expect((await cells(notSettled))[6]).not.toBe("");
+    expect((await cells(undecidable)).slice(3, 10)).toEqual(["undecidable", "calendar", "", "", "", "", ""]);
+  });
+
+  it("hands no formula to a spreadsheet", async () => {
+    const named = (experiment: string) => ({ ...adopt, plan: { ...adopt.plan, experiment } });
+    expect((await cells(named("=1+1")))[0]).toBe("'=1+1");
+    expect((await cells(named("@x")))[0]).toBe("'@x");
+    expect((await cells(named("-5 degrees")))[0]).toBe("-5 degrees");
+  });
+});
+
+describe("the files of an earlier run", () => {
+  let folder: string;
+  beforeEach(async () => {
+    folder = await mkdtemp(path.join(tmpdir(), "closeout-extras-"));
+  });
+  afterEach(() => rm(folder, { recursive: true, force: true }));
+  const files: readonly ExtraFile[] = [
+    { name: "page-one.html", text: "one" },
+    { name: "figures/forest.svg", text: "two" },
+  ];
+
+  it("go when the figures are not asked for, and nothing else does", async () => {
+    await mkdir(path.join(folder, "figures"));
+    await writeFile(path.join(folder, "figures", "mine.svg"), "");
+    await writeFile(path.join(folder, "report.html"), "");
+    await keepExtras(folder, files);
+    expect((await readdir(path.join(folder, "figures"))).sort()).toEqual(["forest.svg", "mine.svg"]);
+    await keepExtras(folder, []);
+    expect((await readdir(folder)).sort()).toEqual(["figures", "report.html"]);
+    expect(await readdir(path.join(folder, "figures"))).toEqual(["mine.svg"]);
+  });
+
+  it("go with their folder where nothing else lies in it", async () => {
+    await keepExtras(folder, files);
+    await keepExtras(folder, []);
+    expect(await readdir(folder)).toEqual([]);
+  });
+
+  it("give place to the new ones, and nothing is left between", async () => {
+    await keepExtras(folder, files);
+    expect(await keepExtras(folder, [{ name: "figures/flow.svg", text: "three" }])).toEqual([
+      path.join(folder, "figures/flow.svg"),
+    ]);
+    expect(await readdir(folder)).toEqual(["figures"]);
+    expect(await readFile(path.join(folder, "figures", "flow.svg"), "utf8")).toBe("three");
+    expect(await readdir(path.join(folder, "figures"))).toEqual(["flow.svg"]);
+  });
+});
+
+describe("the name at the head of printed pages", () => {
+  it("cannot end its string, its rule or the style sheet, whatever the plan calls the test", () => {
+    expect(cssText('a"; } </style>')).toBe("a\\22 \\3b  \\7d  \\3c \\2f style\\3e ");
+    expect(cssText("\u65e5\u672c")).toBe("\\65e5 \\672c ");
+    expect(cssText("x\n\\")).toBe("x \\5c ");
+  });
+
+  it("is cut where the page is too narrow for it", () => {
+    expect(cssText("a".repeat(200))).toBe(`${"a".repeat(79)}\\2026 `);
+  });
+});
