@@ -55,6 +55,8 @@ export interface Page {
   readonly untold: readonly string[];
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
   readonly afterwards: AfterwardsSection | null;
+  /** Then section 5 begins with a list of them. */
+  readonly severalMetrics: boolean;
   readonly power: PowerSection;
   readonly methods: MethodsSection;
   readonly consort: ConsortTable;
@@ -135,6 +137,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
     afterwards: await afterwardsSection(inputs),
+    severalMetrics: plan.metrics.length > 1,
     power: powerSection(plan, reduction, effects),
     methods,
     consort: consortTable(plan, reduction, baseline !== null),

@@ -5,6 +5,7 @@ import type { BlindPage } from "./check/page.ts";
 import type { Comparison } from "./comparison.ts";
 import type { Page } from "./page.ts";
 import { pageOne } from "./page-one.ts";
+import { termParts } from "./terms.ts";
 import { typeset, typesetPlainly, typesetWithPlan } from "./typeset.ts";
 
 /** templates/ lies beside src/ and beside dist/, so one address serves both. */
@@ -25,6 +26,7 @@ const PARTIALS = [
   "distribution",
   "flow",
   "term",
+  "told",
   "baseline",
   "consort",
   "design",
@@ -64,12 +66,13 @@ function rendered(name: string, data: object): string {
   const handlebars = Handlebars.create();
   handlebars.registerHelper("ownDrawingUnescaped", ownDrawingUnescaped);
   handlebars.registerHelper("cssText", cssText);
+  handlebars.registerHelper("termParts", termParts);
   for (const partial of PARTIALS) handlebars.registerPartial(partial, template(`partials/${partial}.hbs`));
   handlebars.registerPartial("style", template("style.css"));
   const render = handlebars.compile<object>(template(name), {
     strict: true,
     knownHelpersOnly: true,
-    knownHelpers: { ownDrawingUnescaped: true, cssText: true, lookup: true },
+    knownHelpers: { ownDrawingUnescaped: true, cssText: true, termParts: true, lookup: true },
     preventIndent: true,
   });
   return render(data);

@@ -1,7 +1,6 @@
 /// <reference lib="dom" />
 /// <reference lib="dom.iterable" />
 import { mkdtemp, rm, writeFile } from "node:fs/promises";
-import { createRequire } from "node:module";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { pathToFileURL } from "node:url";
@@ -10,11 +9,10 @@ import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { renderReport } from "../../src/report/index.ts";
 import { everyCase } from "../report/every.ts";
 import { wide } from "../report/wide.ts";
+import { violations } from "./axe.ts";
 import { openBrowser } from "./chromium.ts";
 
 /** A report in a real browser: what it asks for, what it says, how it fits, and whether everyone can read it. */
-const AXE = createRequire(import.meta.url).resolve("axe-core/axe.min.js");
-const WCAG = ["wcag2a", "wcag2aa", "wcag21a", "wcag21aa", "wcag22aa"];
 const WIDTHS = [360, 768, 1024, 1440];
 
 const pages = [...everyCase, ["forty measures and five variants", wide] as const];
@@ -83,15 +81,7 @@ describe.each(pages)("the report of the case %s, in a browser,", (name) => {
 
   it.each([false, true])("breaks no rule of WCAG 2.2, A or AA, that a machine can test (dark: %s)", async (dark) => {
     await open(name, { dark }, async (page) => {
-      await page.evaluate(() => {
-        for (const details of document.querySelectorAll("details")) details.open = true;
-      });
-      await page.addScriptTag({ path: AXE });
-      const broken = await page.evaluate(async (tags) => {
-        const { axe } = globalThis as unknown as { axe: { run(where: unknown, options: unknown): Promise<AxeResult> } };
-        const { violations } = await axe.run(document, { runOnly: { type: "tag", values: tags } });
-        return violations.map(({ id, nodes }) => `${id}: ${nodes.map((node) => node.html).join(" | ")}`);
-      }, WCAG);
+      const broken = await violations(page);
       expect(broken).toEqual([]);
     });
   });
@@ -224,10 +214,6 @@ describe("the report's look", () => {
     }
   });
 });
-
-interface AxeResult {
-  readonly violations: readonly { readonly id: string; readonly nodes: readonly { readonly html: string }[] }[];
-}
 
 /** Runs in the page: cells of one table row whose texts overlap, and texts that stick out of their cell. */
 function cellsThatMeet(): string[] {

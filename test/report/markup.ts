@@ -25,7 +25,8 @@ export function tagsOf(html: string): Tag[] {
 /** What a reader sees, tags gone and entities resolved. */
 export function textOf(html: string): string {
   const body = html.replace(/<style>.*?<\/style>/s, "").replace(/<title>.*?<\/title>/s, "");
-  return unescaped(body.replace(/<[^>]*>/g, " ")).replace(/\s+/g, " ");
+  // a link stands inside a word or sentence
+  return unescaped(body.replace(/<\/?a\b[^>]*>/g, "").replace(/<[^>]*>/g, " ")).replace(/\s+/g, " ");
 }
 
 /** The inside of the section with this id, up to the next one of its rank. */

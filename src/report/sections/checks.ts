@@ -10,6 +10,8 @@ export interface ChecksSection {
 export interface CheckText {
   readonly id: string;
   readonly title: string;
+  /** The line of Methods on it, where there is one. */
+  readonly term: string;
   /** "failed", "strong caution", "caution", "passed". */
   readonly outcome: string;
   readonly sentence: string;
@@ -40,6 +42,13 @@ export const TITLES: Readonly<Record<string, string>> = {
   "without-rows": "Left out for want of a value",
   denominator: "Denominator alike in both groups",
   "plan-changed": "Plan unchanged",
+};
+
+const TERMS: Readonly<Record<string, string>> = {
+  balance: "method-groups-before-enrolment",
+  "one-unit": "method-one-value",
+  normality: "method-normal-approximation",
+  denominator: "method-ratio-of-totals",
 };
 
 const RANK = (check: Check) => (check.result === "fail" ? 0 : check.strong ? 1 : check.result === "caution" ? 2 : 3);
@@ -76,6 +85,7 @@ function checkText(check: Check): CheckText {
   return {
     id: check.id,
     title: titleOf(check.id),
+    term: TERMS[check.id] ?? "",
     outcome: outcomeText(check.result, check.strong),
     sentence: check.sentence,
     remedy: check.remedy,

@@ -90,7 +90,12 @@ function rule(plan: Plan): Fact[] {
     { name: "Decides", value: `${list(primaries, any ? "or" : "and")}${any ? "; any one of them is enough" : ""}.` },
     ...(guardrails.length === 0
       ? []
-      : [{ name: "Must not get worse", value: `${list(guardrails)}, each within its limit.` }]),
+      : [
+          {
+            name: "Must not get worse",
+            value: `${list(guardrails)}, ${guardrails.length === 1 ? "" : "each "}within its limit.`,
+          },
+        ]),
     ...(secondaries.length === 0 ? [] : [{ name: "For information", value: `${list(secondaries)}.` }]),
     {
       name: "Adopts",
@@ -99,7 +104,7 @@ function rule(plan: Plan): Fact[] {
           ? "When the whole interval is a gain."
           : "When the whole interval is beyond what was asked for.",
     },
-    { name: "Confidence", value: `${planPercent(decision.confidence)} for every interval.` },
+    { name: "Confidence", value: `${planPercent(decision.confidence)}.` },
     { name: "Power", value: `${planPercent(decision.power)}, for sizes.` },
   ];
 }

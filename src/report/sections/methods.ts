@@ -52,6 +52,7 @@ function registeredText(plan: Plan): string | null {
 /** Only what this report uses. */
 function methods(inputs: ReportInputs): MethodsSection["methods"] {
   const { plan, effects, choices, reduction } = inputs;
+  const isDecided = inputs.conclusion.decision !== "undecidable";
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -60,7 +61,7 @@ function methods(inputs: ReportInputs): MethodsSection["methods"] {
   const has = (summary: Effect["summary"]) => effects.some((effect) => effect.summary === summary);
   const others = plan.variants.filter((variant) => !variant.isControl).length;
   const confidence = planPercent(plan.decision.confidence);
-  const { many } = plan.unitCalled;
+  const { one, many } = plan.unitCalled;
   const primaries = plan.metrics.filter(({ role }) => role === "primary").length;
   const forInformation = effects.filter(({ role }) => role === "secondary").length;
   const simply = effects.some(
@@ -82,14 +83,14 @@ function methods(inputs: ReportInputs): MethodsSection["methods"] {
     {
       when: has("proportion"),
       name: "Shares",
-      how: "A share is the mean of a 0 or 1 per unit. The score interval is shown beside it, and counts where a group has fewer than 10 units with, or fewer than 10 without; the relative difference then follows from the same limits.",
+      how: `A share is the mean of a 0 or 1 per ${one}. The score interval is shown beside it, and counts where a group has fewer than 10 ${many} with, or fewer than 10 without; the relative difference then follows from the same limits.`,
       source:
         "Newcombe 1998, Statistics in Medicine 17, 873-890, method 10; Wilson 1927; Donner and Zou 2012, Statistical Methods in Medical Research 21, 347-359",
     },
     {
       when: has("ratio-of-totals"),
       name: "Ratio of totals",
-      how: "Total over total in each group; its variance from the score of each unit, numerator minus ratio times denominator, over the mean denominator.",
+      how: `Total over total in each group; its variance from the score of each ${one}, numerator minus ratio times denominator, over the mean denominator.`,
       source: "Cochran 1977, chapter\u00a06; Deng, Knoblich and Lu 2018",
     },
     {
@@ -161,7 +162,8 @@ function methods(inputs: ReportInputs): MethodsSection["methods"] {
         "Simonsohn, Simmons and Nelson 2020, Nature Human Behaviour 4, 1208-1214; ICH E9(R1), sensitivity analysis",
     },
     {
-      when: effects.some(({ role, zone }) => role !== "secondary" && zone !== "not-settled"),
+      // on an undecidable report nothing is told that could turn
+      when: isDecided && effects.some(({ role, zone }) => role !== "secondary" && zone !== "not-settled"),
       name: "What would turn it",
       how: `The level at which the ${many} of a variant that were not counted would carry the end of the interval to the limit it has passed, were those of the control like its counted ones and the interval as wide as it is.`,
       source:

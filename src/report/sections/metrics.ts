@@ -2,7 +2,7 @@ import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan, Role, Summary } from "../../plan/types.ts";
 import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, list, percentile, plain, plural } from "../../words/index.ts";
+import { capital, count, type Interval, list, percentile, plain, plural, quoted } from "../../words/index.ts";
 import {
   bareText,
   effectText,
@@ -148,13 +148,15 @@ function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readon
   const notes: string[] = [];
   if (cells.cap !== null) {
     const unit = metric.unitOfMeasure === null ? "" : ` ${metric.unitOfMeasure}`;
-    const changed = plan.variants.map(({ name }, v) => `${count(cells.cap?.units[v] ?? 0)} with ${name}`).join(", ");
+    const changed = plan.variants
+      .map(({ name }, v) => `${count(cells.cap?.units[v] ?? 0)} with ${quoted(name)}`)
+      .join(", ");
     notes.push(
       `The cap stands at ${plain(Number(cells.cap.value))}${unit}; it changed ${plural(total(cells.cap.units), one, many)}: ${changed}.`,
     );
   }
   if (total(cells.leftOut) > 0) {
-    const by = plan.variants.map(({ name }, v) => `${count(cells.leftOut[v] ?? 0)} with ${name}`).join(", ");
+    const by = plan.variants.map(({ name }, v) => `${count(cells.leftOut[v] ?? 0)} with ${quoted(name)}`).join(", ");
     notes.push(`${capital(plural(total(cells.leftOut), one, many))} without a value left out: ${by}.`);
   }
   if (cells.countedWithoutNumber > 0) {
@@ -181,7 +183,7 @@ function absentText(effect: Effect, plan: Plan): string | null {
     return `One end of the interval is open, since ${because("few-for-rank", one, many)}.`;
   }
   if (!("absent" in contrast.relative)) return null;
-  return `The difference relative to "${control}" is not shown, since ${because(contrast.relative.absent, one, many)}.`;
+  return `The difference relative to ${quoted(control)} is not shown, since ${because(contrast.relative.absent, one, many)}.`;
 }
 
 function armColumns(metric: Metric, plan: Plan): string[] {
