@@ -54,7 +54,7 @@ export async function check(planPath: string, options: CloseoutOptions = {}): Pr
 
 /** The cells end here: past this point nothing is known of a metric by variant. */
 function blindInputs(file: PlanFile, plan: Plan, reduction: Reduction): BlindInputs {
-  const { metrics: _cells, ...blind } = reduction;
+  const { metrics: _cells, groups: _groups, ...blind } = reduction;
   return {
     plan,
     planText: file.text,

@@ -7,7 +7,7 @@ import {
   otherChoices,
   subgroups as subgroupsOf,
 } from "./decision/index.ts";
-import type { Judged } from "./judge.ts";
+import { type Judged, judged } from "./judge.ts";
 import { cellsFile, cellsText } from "./kept/file.ts";
 import type { Measured } from "./measure.ts";
 import { type Plan, planChanges } from "./plan/index.ts";
@@ -26,13 +26,24 @@ export async function decisionReport(
   rerun: Rerun | null,
   fromCells = false,
 ): Promise<ReportFiles> {
-  const { reduction, arms, pairs } = measured;
+  const { reduction, arms, pairs, afterwards: further } = measured;
   const { effects, conclusion } = found;
   const plan = atThisLook(planned, reduction);
   const choices = otherChoices(plan, reduction, arms, pairs, effects);
   const accruals = accrualsOf(plan, reduction, arms, pairs, effects);
   const daysSince = daysSinceOf(plan, reduction, effects);
   const subgroups = subgroupsOf(plan, reduction, arms, pairs, effects);
+  const afterwards = {
+    subgroups: subgroupsOf(plan, reduction, arms, pairs, effects, "afterwards"),
+    metrics:
+      further === null
+        ? null
+        : {
+            plan: further.plan,
+            reduction: further.measured.reduction,
+            effects: judged(further.plan, further.measured).effects,
+          },
+  };
   const kept = cellsText(cellsFile(plan, planText, measured, found, rerun?.steps ?? null));
   const rendered = await renderReport({
     plan,
@@ -46,6 +57,7 @@ export async function decisionReport(
     accruals,
     daysSince,
     subgroups,
+    afterwards,
     conclusion,
     fromCells,
     cellsSha256: sha256(kept),

@@ -1,6 +1,7 @@
 /** The library entry: a plan in, a decision report out. */
 import { readFile } from "node:fs/promises";
 import path from "node:path";
+import { performance } from "node:perf_hooks";
 import { decisionReport } from "./compute.ts";
 import { type Progress, UnusableLog } from "./engine/index.ts";
 import { judged } from "./judge.ts";
@@ -74,10 +75,12 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
   try {
     const planFolder = path.dirname(path.resolve(planPath));
     const fromCells = options.fromCells !== undefined;
+    const began = performance.now();
     const found =
       plan !== null && options.fromCells !== undefined
         ? await measuredFromFile(plan, planText, options.fromCells)
         : await measure(plan, loaded.source, planFolder, { ...options, rejectsTo: folder?.staged("rejects.csv") });
+    const tookMs = performance.now() - began;
     if ("refused" in found) return { status: 2, text: found.refused };
     if (plan === null || folder === null || "problems" in found) {
       const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
@@ -93,7 +96,7 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
     );
     if ("refused" in replaced) return { status: 2, text: replaced.refused };
     const judgement = judged(plan, found);
-    const now = { plan, planText, planFolder, measured: found, judged: judgement, fromCells };
+    const now = { plan, planText, planFolder, measured: found, judged: judgement, tookMs, fromCells };
     const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
     const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
     options.signal?.throwIfAborted();

@@ -8,7 +8,7 @@ import {
   type Session,
   withReduction,
 } from "./engine/index.ts";
-import type { Plan, PlanSource, Problem } from "./plan/index.ts";
+import { type Plan, type PlanSource, type Problem, planAfterwards } from "./plan/index.ts";
 
 /** All that a report is made from, of constant size. */
 export interface Measured {
@@ -19,6 +19,8 @@ export interface Measured {
   readonly pairs: readonly Pair[];
   /** What was asked of the units beyond the reduction. */
   readonly answers: Answers;
+  /** What was asked after the test began: metrics of their own, from a reading of their own. */
+  readonly afterwards: { readonly plan: Plan; readonly measured: Measured } | null;
 }
 export interface Answers {
   readonly adjusted: readonly { readonly request: AdjustedRequest; readonly table: ScoreTable }[];
@@ -30,14 +32,20 @@ export interface Answers {
   }[];
 }
 
-/** One pass over the log of a plan. @throws UnusableLog */
-export function measure(
+/** One pass over the log of a plan, and another for metrics that were asked afterwards. @throws UnusableLog */
+export async function measure(
   plan: Plan | null,
   source: PlanSource,
   folder: string,
   options: ReduceOptions,
 ): Promise<Measured | { readonly problems: readonly Problem[] }> {
-  return withReduction(plan, source, folder, options, whileOpen);
+  const found = await withReduction(plan, source, folder, options, whileOpen);
+  if (plan === null || "problems" in found || plan.askedAfterwards.metrics.length === 0) return found;
+  const own = planAfterwards(plan);
+  const { rejectsTo: _none, ...again } = options;
+  const further = await withReduction(own, source, folder, again, whileOpen);
+  if ("problems" in further) return further;
+  return { ...found, afterwards: { plan: own, measured: further } };
 }
 
 /** While the engine still holds the units: the arms, and what only the units can tell of them. */
@@ -64,7 +72,7 @@ export async function whileOpen(planned: Plan, reduction: Reduction, session: Se
   };
   const arms = await withOrderStatistics(plan, armsByMetric(plan, reduction), atRanks);
   const pairs = await adjustedPairs(plan, reduction, adjusted);
-  return { reduction, arms, pairs, answers };
+  return { reduction, arms, pairs, answers, afterwards: null };
 }
 
 function armsByMetric(plan: Plan, { metrics }: Reduction): Arm[][] {

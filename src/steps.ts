@@ -21,6 +21,8 @@ export interface Now {
   readonly planFolder: string;
   readonly measured: Measured;
   readonly judged: Judged;
+  /** How long its pass over the log took, ms; for the terminal alone. */
+  readonly tookMs?: number;
   /** The log is not at hand: steps that need it are not computed. */
   readonly fromCells?: boolean;
 }
@@ -79,7 +81,11 @@ async function figuresOf(
     if (!passes.has(key) && "source" in plan && now.fromCells !== true) {
       const done = passes.size - 1;
       options.signal?.throwIfAborted();
-      options.progress?.({ stage: stageText(done, total, performance.now() - began), rows: 0, share: done / total });
+      options.progress?.({
+        stage: stageText(done, total, done === 0 ? (now.tookMs ?? 0) : (performance.now() - began) / done),
+        rows: 0,
+        share: done / total,
+      });
       passes.set(key, await measuredOf(plan.plan, plan.source, now.planFolder, options));
     }
     const measured = passes.get(key) ?? null;
@@ -100,7 +106,9 @@ async function measuredOf(
   { threads, memory, signal }: ReduceOptions,
 ): Promise<Measured | null> {
   try {
-    const found = await measure(plan, source, folder, { threads, memory, signal });
+    // What was asked afterwards moves nothing of the plan's own: no step needs its reading.
+    const own = { ...plan, askedAfterwards: { ...plan.askedAfterwards, metrics: [] } };
+    const found = await measure(own, source, folder, { threads, memory, signal });
     return "problems" in found ? null : found;
   } catch (error) {
     if (error instanceof UnusableLog && signal?.aborted !== true) return null;
@@ -157,7 +165,9 @@ function isSameLog({ provenance }: PreviousReport["report"], { reduction }: Meas
   );
 }
 
-function stageText(done: number, total: number, ms: number): string {
-  const left = done === 0 ? "" : `, about ${Math.max(1, Math.round((ms / done) * (total - done) * 1e-3))} s to go`;
+/** @param passMs what a pass has taken so far, on average */
+function stageText(done: number, total: number, passMs: number): string {
+  const seconds = Math.round((passMs * (total - done)) / 1000);
+  const left = seconds === 0 ? "" : `, about ${seconds} s to go`;
   return `which change did it: pass ${done + 1} of ${total} over the log${left}`;
 }

@@ -1,6 +1,6 @@
 import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
-import { dayOfEpoch, daysText } from "../words/index.ts";
+import { dateText, dayOfEpoch, daysText } from "../words/index.ts";
 import { byGroup, type Grouping } from "./by-group.ts";
 import { asCheck } from "./finding.ts";
 import type { Check } from "./types.ts";
@@ -29,16 +29,20 @@ export function days(plan: Plan, { facts }: Reduction): Grouping | null {
     elsewhere: "on all other days",
     remedy: (places) => {
       const { many } = plan.unitCalled;
-      const changed = "If the allocation was changed during the test, count the days of one allocation only";
-      const isStart = places.length < found.length && places.every((place, i) => place === i);
-      const isEnd =
-        places.length < found.length && places.every((place, i) => place === found.length - places.length + i);
-      const from = isStart ? ` (enrolment, from: ${isoDay(dayAt(places.length))})` : "";
-      const before = isEnd ? ` (enrolment, before: ${isoDay(dayAt(places[0] ?? 0))})` : "";
-      return `${changed}${from || before}, and run the report again; if it was not, find out how ${many} were given a variant ${`on ${daysText(places.map(dayAt))}`}.`;
+      const isSome = places.length < found.length;
+      const isStart = isSome && places.every((place, i) => place === i);
+      const isEnd = isSome && places.every((place, i) => place === found.length - places.length + i);
+      const which = isStart
+        ? `only the days from ${dayText(dayAt(places.length))} on (enrolment: from)`
+        : isEnd
+          ? `only the days before ${dayText(dayAt(places[0] ?? 0))} (enrolment: before)`
+          : "only the days of one allocation (enrolment: from, before)";
+      return `If the allocation was changed during the test, count ${which}, and run the report again; if it was not, find out how ${many} were given a variant on ${daysText(places.map(dayAt))}.`;
     },
   };
 }
+
+const dayText = (day: number): string => dateText(dayOfEpoch(day));
 
 /** "2026-03-09". */
 function isoDay(day: number): string {

@@ -26,7 +26,7 @@ export function levelGroupings(plan: Plan, { facts }: Reduction): Grouping[] {
       at,
       elsewhere: "elsewhere",
       remedy: (places) =>
-        `Find out how ${plan.unitCalled.many} were given a variant ${at(places)}, and whether their rows arrive. If it cannot be mended, leave these out by a filter (drop: units, when: at-enrolment), and say so.`,
+        `Find out how ${plan.unitCalled.many} were given a variant ${at(places)}, and whether their rows arrive. If it cannot be mended, leave these ${plan.unitCalled.many} out by a filter (when: at-enrolment), and say so.`,
     };
   });
 }

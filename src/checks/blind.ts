@@ -1,11 +1,16 @@
 import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { allocation } from "./allocation.ts";
+import { allocationByDay } from "./allocation-by-day.ts";
+import { allocationByLevel } from "./allocation-by-level.ts";
 import { balance } from "./balance.ts";
 import { duplicatesTogether } from "./duplicates.ts";
+import { exits } from "./exits.ts";
 import { filters } from "./filters.ts";
+import { gapsTogether } from "./gaps.ts";
 import { neverOccurs } from "./never-occurs.ts";
 import { rejectedTogether } from "./rejected.ts";
+import { span } from "./span.ts";
 import { switchedTogether } from "./switched.ts";
 import type { Check } from "./types.ts";
 import { unknownVariants } from "./unknown-variants.ts";
@@ -47,10 +52,15 @@ export const BEFORE_THE_END: Readonly<Record<string, "whole" | "together" | "wit
 
 const CHECKS: readonly ((plan: Plan, reduction: Reduction) => Check | null)[] = [
   allocation,
+  allocationByDay,
+  allocationByLevel,
+  exits,
   rejectedTogether,
   duplicatesTogether,
   switchedTogether,
   unknownVariants,
+  gapsTogether,
+  span,
   balanceBeforehand,
   filters,
   neverOccurs,

@@ -103,7 +103,7 @@ function enrolling(plan: Plan, { facts }: Reduction, filter: Filter): Note[] {
   return [
     {
       sentence: `It took rows that enrol ${many}: of ${groupShares(plan, having, outOf)}. They are enrolled by a later row, or not at all.${p === null ? "" : ` ${ofDifference(p)}`}`,
-      remedy: `Let the filter ${quoted(filter.name)} spare the enrolling rows, or make it a filter of ${many} (drop: units), so that it shows who is left out.`,
+      remedy: `Let the filter ${quoted(filter.name)} spare the enrolling rows, or let it drop the ${many} themselves, so that it shows who is left out.`,
       figures: { enrolling: perVariant(plan, having), ...(p === null ? {} : { p }) },
     },
   ];

@@ -7,7 +7,7 @@ import { gapsOf, type HourRun, hoursLike, runText } from "./hours.ts";
 import { sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
 import type { Check } from "./types.ts";
-import { byChance, sourceName, units } from "./words.ts";
+import { byChance, entryName, units } from "./words.ts";
 
 const RUNS_NAMED = 3;
 
@@ -18,14 +18,23 @@ const RUNS_NAMED = 3;
 export function gaps(plan: Plan, { facts }: Reduction): Check | null {
   const { sources, silences } = facts.soundness;
   const arms = byArm(plan, sources, silences, facts.enrolled);
+  return check(plan, sources, arms === null ? [] : [arms]);
+}
+
+/** The same without its part by variant. */
+export function gapsTogether(plan: Plan, { facts }: Reduction): Check | null {
+  return check(plan, facts.soundness.sources, []);
+}
+
+function check(plan: Plan, sources: readonly SourceHours[], more: readonly Finding[]): Check | null {
   const found = sources.map((source) => ofSource(plan, source));
   const hours = sum(found.map(({ figures }) => Number(figures.hours)));
-  return asCheck("gaps", [...found, ...(arms === null ? [] : [arms])], { hours });
+  return asCheck("gaps", [...found, ...more], { hours });
 }
 
 function ofSource(plan: Plan, source: SourceHours): Finding {
-  const name = plan.log.length === 1 ? "the log" : sourceName(plan, source.source);
-  const about = plan.log.length === 1 ? "hours" : sourceName(plan, source.source);
+  const name = plan.log.length === 1 ? "the log" : entryName(source.source);
+  const about = plan.log.length === 1 ? "hours" : entryName(source.source);
   const runs = gapsOf(source.hours);
   const hours = sum(runs.map(({ first, last }) => last - first + 1));
   const figures = { hours, runs: runs.slice(0, RUNS_NAMED).map((run) => runText(source.hours, run)) };
@@ -88,7 +97,7 @@ function byArm(
   const { silence, source } = worst;
   const variant = plan.variants[silence.variant]?.name ?? "";
   const when = runText(source.hours, silence);
-  const place = plan.log.length === 1 ? "" : ` in ${sourceName(plan, source.source)}`;
+  const place = plan.log.length === 1 ? "" : ` in ${entryName(source.source)}`;
   const others = judged.filter((one) => byP(one.p) !== "pass").length - 1;
   const more =
     others > 0

@@ -5,7 +5,7 @@ import { count, dateSpan, dayOfEpoch, percent, plural } from "../words/index.ts"
 import { asCheck, type Finding, passed } from "./finding.ts";
 import { sum } from "./ledger.ts";
 import type { Check } from "./types.ts";
-import { sourceName } from "./words.ts";
+import { entryName } from "./words.ts";
 
 /**
  * Rows outside the span of their entry of the log, the run without a gap of more than 7 days that holds most of them: clocks
@@ -25,8 +25,8 @@ function judge(plan: Plan, { source, outside, hours }: SourceHours): Finding {
   const inside = sum(hours.map(({ rows }) => rows));
   const [first, last] = [hours[0]?.day ?? 0, hours.at(-1)?.day ?? 0];
   const days = dateSpan(dayOfEpoch(first), dayOfEpoch(last));
-  const about = plan.log.length === 1 ? "rows" : sourceName(plan, source);
-  const of = plan.log.length === 1 ? "" : ` of ${sourceName(plan, source)}`;
+  const about = plan.log.length === 1 ? "rows" : entryName(source);
+  const of = plan.log.length === 1 ? "" : ` of ${entryName(source)}`;
   const figures = { rows: outside, share: outside / (inside + outside) };
   if (outside === 0) return passed(about, `All rows${of} lie in one run of days, ${days}.`, figures);
   const [lie, they] = outside === 1 ? ["lies", "It counts"] : ["lie", "They count"];

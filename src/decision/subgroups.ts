@@ -51,6 +51,7 @@ export type Standing = "too-few" | "against" | "not-against";
  * quantiles have none.
  * @param arms per metric, per variant, both in plan order
  * @param pairs the adjusted arms of metrics that the plan adjusts
+ * @param asked which columns: those of the plan, or those that were asked afterwards; each are a family of their own
  */
 export function subgroups(
   plan: Plan,
@@ -58,10 +59,13 @@ export function subgroups(
   arms: readonly (readonly Arm[])[],
   pairs: readonly Pair[],
   effects: readonly Effect[],
+  asked: "planned" | "afterwards" = "planned",
 ): Subgroup[] {
-  const found = facts.subgroups.flatMap(({ column, levels }, s) =>
+  const columns = asked === "planned" ? facts.subgroups : facts.subgroupsAfterwards;
+  const first = asked === "planned" ? 0 : facts.subgroups.length;
+  const found = columns.flatMap(({ column, levels }, s) =>
     plan.metrics.flatMap((metric, m) => {
-      const cells = groups[m]?.byLevel[s];
+      const cells = groups[m]?.byLevel[first + s];
       if (cells === undefined) return [];
       const parts = groupSums(cells, plan.variants.length);
       const all = accumulated(parts).at(-1);

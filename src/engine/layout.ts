@@ -6,9 +6,13 @@ import type { FileGroup } from "./source.ts";
  * reading, and where their answers stand.
  */
 export interface Layout {
-  /** The columns to read as text (c-th is x<c>); the first `ordered` of them end the canonical order. */
+  /**
+   * The columns to read as text (c-th is x<c>). The first `ordered` of them, which the plan names, end the canonical order;
+   * those up to `kept`, which only subgroups asked afterwards name, break what ties are left.
+   */
   readonly columns: readonly string[];
   readonly ordered: number;
+  readonly kept: number;
   /** Per column: whether its values must be numbers, which then stand as v<c>. */
   readonly numeric: readonly boolean[];
   /**
@@ -18,7 +22,7 @@ export interface Layout {
   readonly standIns: readonly (StandIn | null)[];
   /** Columns whose value at enrolment is a covariate. */
   readonly covariateColumns: readonly number[];
-  /** Columns whose value at enrolment divides the units, in plan order. */
+  /** Columns whose value at enrolment divides the units, in plan order; then those asked afterwards. */
   readonly subgroupColumns: readonly number[];
   readonly hasTime: boolean;
   readonly hasEventId: boolean;
@@ -66,7 +70,8 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
     ...plan.incidents.map((incident) => incident.where),
   ];
   const tested = conditions.flatMap((tests) => tests.map((test) => test.column));
-  const columns = [...new Set([...plan.columns, ...plan.numericColumns, ...tested])];
+  const kept = [...new Set([...plan.columns, ...plan.askedAfterwards.subgroups])];
+  const columns = [...new Set([...kept, ...plan.numericColumns, ...tested])];
   const matches = distinct(parts.map(({ part }) => ({ event: part.event, where: part.where })));
   const flags: Where[] = [];
   let lists = 0;
@@ -85,6 +90,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
   return {
     columns,
     ordered: plan.columns.length,
+    kept: kept.length,
     numeric: columns.map((column) => plan.numericColumns.includes(column)),
     covariateColumns: [
       ...new Set(
@@ -93,7 +99,7 @@ export function layout(plan: Plan, groups: readonly Pick<FileGroup, "source" | "
         ),
       ),
     ],
-    subgroupColumns: plan.subgroups.map((column) => columns.indexOf(column)),
+    subgroupColumns: [...plan.subgroups, ...plan.askedAfterwards.subgroups].map((column) => columns.indexOf(column)),
     standIns: columns.map((column) => (plan.numericColumns.includes(column) ? null : standIn(plan, groups, column))),
     hasTime: plan.log.every((source) => source.columns.time !== null),
     hasEventId: plan.log.some((source) => source.columns.eventId !== null),

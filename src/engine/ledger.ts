@@ -102,7 +102,7 @@ export function reasonText(reason: number, layout: Layout): string {
   return isRange ? `out of range: ${column}` : `not a number: ${column}`;
 }
 
-type CountedFacts = Omit<Facts, "soundness" | "subgroups">;
+type CountedFacts = Omit<Facts, "soundness" | "subgroups" | "subgroupsAfterwards">;
 
 /** What the checks look at. */
 export async function facts(

@@ -205,7 +205,12 @@ async function stages(
     })),
     lists,
     ...account,
-    facts: { ...found, subgroups: bySubgroup, soundness: sound },
+    facts: {
+      ...found,
+      subgroups: bySubgroup.slice(0, plan.subgroups.length),
+      subgroupsAfterwards: bySubgroup.slice(plan.subgroups.length),
+      soundness: sound,
+    },
     metrics,
     groups: grouped.map((group, m) => ({ ...group, sinceEnrolment: since[m] ?? null })),
     metricLedgers: ledgers,

@@ -8,6 +8,7 @@ export type ColumnKind =
   | "float"
   | "boolean"
   | "timestamp"
+  | "nanoseconds"
   | "instant"
   | "date"
   | "other";
@@ -34,6 +35,7 @@ export function kindOf(type: string): ColumnKind {
   if (type === "FLOAT" || type === "DOUBLE") return "float";
   if (type === "BOOLEAN") return "boolean";
   if (type === "TIMESTAMP WITH TIME ZONE") return "instant";
+  if (type === "TIMESTAMP_NS") return "nanoseconds";
   if (type.startsWith("TIMESTAMP")) return "timestamp";
   if (type === "DATE") return "date";
   return "other";

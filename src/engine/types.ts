@@ -87,6 +87,8 @@ export interface Facts {
   /** First and last enrolment of a unit that is counted, or will be once it is followed to the end; null without time. */
   readonly firstKeptUs: bigint | null;
   readonly lastKeptUs: bigint | null;
+  /** The same of those that were asked afterwards: no check looks at them. */
+  readonly subgroupsAfterwards: readonly SubgroupColumn[];
 }
 
 /** The levels of a subgroup column, by a unit's value on its enrolling row; a level's place here is its code in cells. */
@@ -151,7 +153,7 @@ export interface MetricGroups {
   readonly metric: string;
   /** By the local day of enrolment, as days since 1970-01-01; null without time. */
   readonly byDay: GroupCells | null;
-  /** One a subgroup column of the plan; the group is the place of the level in `Facts.subgroups`. */
+  /** One a subgroup column, those asked afterwards last; the group is the place of the level in `Facts`. */
   readonly byLevel: readonly GroupCells[];
   /** By day since enrolment; null where a metric cannot be told day by day. */
   readonly sinceEnrolment: SinceEnrolment | null;

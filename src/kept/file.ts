@@ -1,8 +1,8 @@
 import { bucketsOf, type Effect } from "../decision/index.ts";
 import type { AdjustedRequest, KeptBuckets, MetricCells, Reduction, ScoreTable, Session } from "../engine/index.ts";
-import type { Judged } from "../judge.ts";
+import { type Judged, judged } from "../judge.ts";
 import { type Measured, whileOpen } from "../measure.ts";
-import type { Plan } from "../plan/index.ts";
+import { type Plan, planAfterwards } from "../plan/index.ts";
 import type { StepsJson } from "../report/index.ts";
 import { coarseCells, coarseScores } from "./coarse.ts";
 import { parsedText, textWithWholes } from "./text.ts";
@@ -17,8 +17,12 @@ export interface CellsFile {
   readonly plan: string;
   readonly reduction: Reduction;
   readonly answers: Measured["answers"];
+  /** The same of metrics that were asked afterwards. */
+  readonly afterwards: KeptFigures | null;
   readonly steps: StepsJson | null;
 }
+
+type KeptFigures = Pick<Measured, "reduction" | "answers">;
 
 /** The figures of a report as they are kept. */
 export function cellsFile(
@@ -28,11 +32,22 @@ export function cellsFile(
   { effects }: Judged,
   steps: StepsJson | null,
 ): CellsFile {
-  const { reduction, answers } = measured;
+  const { afterwards } = measured;
   return {
     format: 1,
     experiment: plan.experiment,
     plan: planText,
+    ...keptFigures(plan, measured, effects),
+    afterwards:
+      afterwards === null
+        ? null
+        : keptFigures(afterwards.plan, afterwards.measured, judged(afterwards.plan, afterwards.measured).effects),
+    steps,
+  };
+}
+
+function keptFigures(plan: Plan, { reduction, answers }: Measured, effects: readonly Effect[]): KeptFigures {
+  return {
     reduction: {
       ...reduction,
       metrics: plan.metrics.map((metric, m) => {
@@ -45,7 +60,6 @@ export function cellsFile(
       ...answers,
       adjusted: answers.adjusted.map(({ request, table }) => ({ request, table: coarseScores(table) })),
     },
-    steps,
   };
 }
 
@@ -64,27 +78,39 @@ export function readCells(text: string): CellsFile | null {
 
 /** Without what was drawn from buckets that are gone: a report from cells shows only what it can compute itself. */
 export function withoutDraws(file: CellsFile): CellsFile {
-  const metrics = file.reduction.metrics.map((cells) =>
-    cells.kept === undefined ? cells : { ...cells, kept: cells.kept.map((one) => ({ ...one, drawn: null })) },
-  );
-  return { ...file, reduction: { ...file.reduction, metrics } };
+  const undrawn = ({ reduction, answers }: KeptFigures): KeptFigures => ({
+    reduction: {
+      ...reduction,
+      metrics: reduction.metrics.map((cells) =>
+        cells.kept === undefined ? cells : { ...cells, kept: cells.kept.map((one) => ({ ...one, drawn: null })) },
+      ),
+    },
+    answers,
+  });
+  return { ...file, ...undrawn(file), afterwards: file.afterwards === null ? null : undrawn(file.afterwards) };
 }
 
 /** The same figures as from the log, from what was kept of them. */
-export function measuredFrom(plan: Plan, { reduction, answers }: CellsFile): Promise<Measured> {
-  return whileOpen(plan, reduction, answering(answers));
+export async function measuredFrom(plan: Plan, { reduction, answers, afterwards }: CellsFile): Promise<Measured> {
+  const measured = await whileOpen(plan, reduction, answering(answers));
+  if (afterwards === null) return measured;
+  const own = planAfterwards(plan);
+  const further = await whileOpen(own, afterwards.reduction, answering(afterwards.answers));
+  return { ...measured, afterwards: { plan: own, measured: further } };
 }
 
 /** What the figures are after they were kept and read again: a report from cells, made from the log. */
-export function throughCells(plan: Plan, planText: string, measured: Measured, judged: Judged): Promise<Measured> {
-  const file = readCells(cellsText(cellsFile(plan, planText, measured, judged, null)));
+export function throughCells(plan: Plan, planText: string, measured: Measured, found: Judged): Promise<Measured> {
+  const file = readCells(cellsText(cellsFile(plan, planText, measured, found, null)));
   if (file === null) throw new Error("cells that were just written cannot be read");
   return measuredFrom(plan, withoutDraws(file));
 }
 
 /** Metrics whose draws cannot be made again, since their buckets were not kept. */
-export function withoutBuckets({ reduction }: CellsFile): readonly string[] {
-  return reduction.metrics.filter(({ kept }) => kept !== undefined).map(({ metric }) => metric);
+export function withoutBuckets({ reduction, afterwards }: CellsFile): readonly string[] {
+  return [...reduction.metrics, ...(afterwards?.reduction.metrics ?? [])]
+    .filter(({ kept }) => kept !== undefined)
+    .map(({ metric }) => metric);
 }
 
 function answering(answers: Measured["answers"]): Session {

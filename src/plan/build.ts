@@ -1,4 +1,4 @@
-import { orderedColumns } from "./columns.ts";
+import { askedAfterwards, orderedColumns, planned } from "./columns.ts";
 import { decimalOf, parsePercent } from "./number.ts";
 import type { AmountYaml, MetricYaml, PartYaml, PlanYaml } from "./schema.ts";
 import type { PlanSource } from "./source.ts";
@@ -86,7 +86,14 @@ export function buildPlan(plan: PlanYaml, source: PlanSource): Plan {
               because: plan.decided.because ?? null,
             },
     },
-    ...orderedColumns(source.mentions),
+    askedAfterwards: {
+      subgroups: plan["asked-afterwards"].subgroups,
+      metrics: plan["asked-afterwards"].metrics.map((metric, i) =>
+        builtMetric({ ...metric, role: "secondary" }, ["asked-afterwards", "metrics", i], source),
+      ),
+      ...orderedColumns(askedAfterwards(source.mentions)),
+    },
+    ...orderedColumns(planned(source.mentions)),
   };
 }
 

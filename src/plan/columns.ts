@@ -13,6 +13,18 @@ export interface Mention {
   readonly isNumeric: boolean;
 }
 
+const AFTERWARDS = "asked-afterwards";
+
+/** Those that the plan made before the test, without what was asked afterwards. */
+export const planned = (mentions: readonly Mention[]): readonly Mention[] =>
+  mentions.filter(({ path }) => path[0] !== AFTERWARDS);
+
+export const askedAfterwards = (mentions: readonly Mention[]): readonly Mention[] =>
+  mentions.filter(({ path }) => path[0] === AFTERWARDS);
+
+/** What is asked afterwards is written as what is planned, one level deeper. */
+const asPlanned = (path: Path): Path => (path[0] === AFTERWARDS ? path.slice(1) : path);
+
 /** Every mention of a column, in the order of the YAML text. What is not a text is no mention; the schema reports it. */
 export function columnMentions(yaml: YamlText): readonly Mention[] {
   const mentions: Mention[] = [];
@@ -54,7 +66,8 @@ export function orderedColumns(mentions: readonly Mention[]): {
   return { columns, numericColumns: columns.filter((name) => numeric.has(name)) };
 }
 
-function isWhere(path: Path): boolean {
+function isWhere(at: Path): boolean {
+  const path = asPlanned(at);
   const [section, , key, inner] = path;
   if (section === "filters" || section === "incidents") return path.length === 3 && key === "where";
   return section === "metrics" && path.length === 4 && (key === "of" || key === "per") && inner === "where";
@@ -63,7 +76,8 @@ function isWhere(path: Path): boolean {
 const ROLES = ["unit", "time", "event", "variant", "event-id"] as const;
 const NUMERIC = ["sum", "max", "min", "first", "last"];
 
-function kindOf(path: Path): Pick<Mention, "role" | "isNumeric"> | null {
+function kindOf(at: Path): Pick<Mention, "role" | "isNumeric"> | null {
+  const path = asPlanned(at);
   const [section, , key, inner] = path;
   if (section === "log" && path.length === 4 && key === "columns") {
     const role = ROLES.find((name) => name === inner);

@@ -1,3 +1,5 @@
+/** What was asked afterwards, as a plan of its own. */
+export { planAfterwards } from "./afterwards.ts";
 /** What differs between two plans, and the fingerprint of what decides. */
 export { mergedNames, type PlanChange, planChanges, planIn } from "./changes.ts";
 export { combinedPlan, type PlanStep, planSteps } from "./combine.ts";

@@ -195,6 +195,16 @@ export const planSchema = z
       .array(text("A column of the log."))
       .meta({ description: "Columns whose value at enrolment divides the units." })
       .default([]),
+    "asked-afterwards": z
+      .strictObject({
+        subgroups: z.array(text("A column of the log.")).meta({ description: "Further subgroups." }).default([]),
+        metrics: z
+          .array(metric.omit({ role: true, worthwhile: true, expected: true, margin: true }))
+          .meta({ description: "Further metrics, without a role: they decide nothing." })
+          .default([]),
+      })
+      .meta({ description: "What was asked after the test began; reported apart, as unplanned, and never decides." })
+      .prefault({}),
     decision: z
       .strictObject({
         confidence: shareBetween0And1("The confidence of the intervals.").default(0.95),
@@ -257,6 +267,7 @@ export const planSchema = z
 /** The plan after its shape was checked, defaults filled in, keys as in the YAML. */
 export type PlanYaml = z.output<typeof planSchema>;
 export type MetricYaml = PlanYaml["metrics"][number];
+export type AfterwardsYaml = PlanYaml["asked-afterwards"]["metrics"][number];
 export type PartYaml = MetricYaml["of"];
 export type WhereYaml = NonNullable<PartYaml["where"]>;
 export type AmountYaml = NonNullable<MetricYaml["worthwhile"]>;

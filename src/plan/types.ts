@@ -21,6 +21,7 @@ export interface Plan {
   readonly filters: readonly Filter[];
   /** Columns whose value on its enrolling row divides the units; in plan order, each once. */
   readonly subgroups: readonly string[];
+  readonly askedAfterwards: AskedAfterwards;
   readonly decision: Decision;
   readonly plannedUnits: number | null;
   /** Null: one analysis, at the end. */
@@ -39,6 +40,16 @@ export interface Plan {
    */
   readonly columns: readonly string[];
   /** Of these, the ones whose values must be numbers: summed, or taken max, min, first or last of, or adjusted for. */
+  readonly numericColumns: readonly string[];
+}
+
+/** What was asked after the test began: reported apart, and without effect on anything that the plan asked before. */
+export interface AskedAfterwards {
+  readonly subgroups: readonly string[];
+  /** Secondary metrics, all of them. */
+  readonly metrics: readonly Metric[];
+  /** The columns that these name, as in the plan. */
+  readonly columns: readonly string[];
   readonly numericColumns: readonly string[];
 }
 

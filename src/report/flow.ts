@@ -5,7 +5,7 @@ import { rowLine, unitLine } from "./ledger.ts";
 import type { FlowJson } from "./types.ts";
 
 /** The flow of units, the ledger of rows and that of each metric's rows, as DESIGN 7 lays them down. */
-export function flowJson(plan: Plan, reduction: Omit<Reduction, "metrics">): FlowJson {
+export function flowJson(plan: Plan, reduction: Omit<Reduction, "metrics" | "groups">): FlowJson {
   const analysed = reduction.unitLines.find((line) => line.id === "analysed")?.byVariant;
   if (analysed === undefined || analysed === null) throw new Error("the unit ledger has no line analysed by variant");
   return {

@@ -10,7 +10,7 @@ const LAST = "report.json";
  * leaves files of both reports for the next run to put right: report.json is still the earlier one then.
  */
 export function putInPlace(names: readonly string[], from: string, folder: string): void {
-  const ordered = [...names].sort((a, b) => (a === LAST ? 1 : b === LAST ? -1 : a < b ? -1 : 1));
+  const ordered = inOrder(names);
   const before = path.join(from, "before");
   mkdirSync(before, { recursive: true });
   const earlier = ordered.filter((name) => existsSync(path.join(folder, name)));
@@ -28,4 +28,9 @@ export function putInPlace(names: readonly string[], from: string, folder: strin
     }
     throw error;
   }
+}
+
+/** By name, report.json behind all others. */
+export function inOrder(names: readonly string[]): readonly string[] {
+  return [...names].sort((a, b) => (a === LAST ? 1 : b === LAST ? -1 : a < b ? -1 : 1));
 }

@@ -27,11 +27,21 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     accrual: inputs.accruals.map(accrualJson),
     sinceEnrolment: inputs.daysSince.map(sinceEnrolmentJson),
     sensitivity: inputs.choices.map(sensitivityJson),
+    askedAfterwards: afterwardsJson(inputs),
     changes: null,
     provenance: provenanceJson(inputs),
   };
   const rounded = twelveDigits(report);
   return rerun === undefined ? rounded : { ...rounded, changes: twelveDigits(changesJson(rerun, rounded)) };
+}
+
+function afterwardsJson({ plan, effects, afterwards }: ReportInputs): ReportJson["askedAfterwards"] {
+  const { subgroups, metrics } = afterwards;
+  if (subgroups.length === 0 && metrics === null) return null;
+  return {
+    effects: (metrics?.effects ?? []).map(effectJson),
+    subgroups: subgroups.map((subgroup) => subgroupJson(subgroup, effects, plan)),
+  };
 }
 
 export function checkJson(check: Check): CheckJson {

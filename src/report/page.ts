@@ -2,6 +2,7 @@ import type { ChangesJson } from "./changes/types.ts";
 import { namesToIsolate } from "./direction.ts";
 import { controlOf, kindText, whenText } from "./plan-words.ts";
 import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
+import { type AfterwardsSection, afterwardsSection } from "./sections/afterwards.ts";
 import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
 import { type ChangesSection, changesSection } from "./sections/changes.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
@@ -21,6 +22,7 @@ import { type RerunLines, rerunLines } from "./sections/rerun.ts";
 import { type SamplingPart, samplingParts } from "./sections/sampling.ts";
 import { type SubgroupPart, subgroupParts } from "./sections/subgroups.ts";
 import { type TurningTable, turningTables } from "./sections/turning.ts";
+import { untoldOfTime } from "./sections/weekdays.ts";
 import type { ReportInputs } from "./types.ts";
 import { withoutControls } from "./typeset.ts";
 
@@ -49,7 +51,10 @@ export interface Page {
   readonly flow: FlowFigure;
   /** Null where the plan names nothing known before enrolment. */
   readonly baseline: BaselineTable | null;
+  /** What of time cannot be told. */
+  readonly untold: readonly string[];
   readonly metrics: readonly (MetricSection & FurtherOnMetric)[];
+  readonly afterwards: AfterwardsSection | null;
   /** Then section 5 begins with a list of them. */
   readonly severalMetrics: boolean;
   readonly power: PowerSection;
@@ -119,6 +124,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     counted: countedSection(plan, reduction),
     baseline,
     flow: await flowFigure(plan, reduction),
+    untold: untoldOfTime(plan),
     metrics: metricSections(plan, reduction, effects).map((metric) => ({
       ...metric,
       distribution: distributions.get(metric.name) ?? null,
@@ -130,6 +136,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
       // What an effect amounts to is not for data that must be mended first.
       turning: conclusion.decision === "undecidable" ? [] : turningTables(plan, reduction, effects, metric.name),
     })),
+    afterwards: await afterwardsSection(inputs),
     severalMetrics: plan.metrics.length > 1,
     power: powerSection(plan, reduction, effects),
     methods,

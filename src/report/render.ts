@@ -33,6 +33,7 @@ const PARTIALS = [
   "sampling",
   "accrual",
   "subgroups",
+  "afterwards",
   "power",
   "methods",
   "from-what",

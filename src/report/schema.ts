@@ -243,6 +243,10 @@ export const reportSchema = z.strictObject({
       }),
     )
     .describe("Each contrast under other reasonable choices. agrees: it stands where the plan's own choice puts it."),
+  askedAfterwards: z
+    .strictObject({ effects: z.array(effect), subgroups: z.array(subgroup) })
+    .nullable()
+    .describe("What was asked after the test began: unplanned, it decides nothing."),
   changes: changesSchema,
   provenance: z.strictObject({
     version: z.string(),

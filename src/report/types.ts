@@ -34,6 +34,11 @@ export interface ReportJson {
   readonly accrual: readonly AccrualJson[];
   readonly sinceEnrolment: readonly SinceEnrolmentJson[];
   readonly sensitivity: readonly SensitivityJson[];
+  /** What was asked after the test began; null where nothing was. */
+  readonly askedAfterwards: {
+    readonly effects: readonly EffectJson[];
+    readonly subgroups: readonly SubgroupJson[];
+  } | null;
   readonly changes: ChangesJson | null;
   readonly provenance: ProvenanceJson;
 }
@@ -226,6 +231,7 @@ export interface ReportInputs {
   readonly accruals: readonly Accrual[];
   readonly daysSince: readonly DaysSince[];
   readonly subgroups: readonly Subgroup[];
+  readonly afterwards: Afterwards;
   readonly conclusion: Conclusion;
   /** The log was not read: the figures are of cells that an earlier report had kept. */
   readonly fromCells?: boolean | undefined;
@@ -233,6 +239,14 @@ export interface ReportInputs {
   readonly cellsSha256?: string | undefined;
   /** Of a report that replaces an earlier one. */
   readonly rerun?: Rerun | undefined;
+}
+
+/** What was asked after the test began: it is told apart, and nothing else looks at it. */
+export interface Afterwards {
+  /** The planned metrics by further columns. */
+  readonly subgroups: readonly Subgroup[];
+  /** Further metrics, from a reading of their own; null where none was asked for. */
+  readonly metrics: { readonly plan: Plan; readonly reduction: Reduction; readonly effects: readonly Effect[] } | null;
 }
 
 export interface ReportFiles {

@@ -9,7 +9,9 @@ export function cellsWords(withoutBuckets: readonly string[], hasSteps: boolean)
     "- the account of rows and of who was counted, and single values (largest ones, caps, quantiles): taken as kept;",
     ...(withoutBuckets.length === 0
       ? []
-      : [`- what was drawn and dealt for ${list(withoutBuckets)}: taken as kept, for sums of fewer than 10 are not;`]),
+      : [
+          `- what was drawn and dealt for ${list(withoutBuckets)}: taken as kept, since sums that stand for fewer than 10 are left out of the file;`,
+        ]),
     ...(hasSteps ? ["- which change did it (section 2): taken as kept;"] : []),
     "For these: closeout verify without --cells.",
   ];

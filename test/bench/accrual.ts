@@ -44,8 +44,8 @@ export function accrualTable(divisor: number): { readonly lines: string[]; reado
     "| units | arms | band, at some look | one moment's interval, at some look | the same, at the last look |",
     "| --- | --- | --- | --- | --- |",
     ...bands.map(
-      ({ of, band, moment, last }) =>
-        `| ${of.data.name} | ${of.step.join(" to ")} | ${[band, moment, last].map((n) => percent(n / runs)).join(" | ")} |`,
+      ({ of, shown, band, moment, last }) =>
+        `| ${of.data.name} | ${of.step.join(" to ")} | ${[band, moment, last].map((n) => (shown === 0 ? "not shown" : percent(n / shown))).join(" | ")} |`,
     ),
     "",
     ...trends.map(
@@ -53,7 +53,7 @@ export function accrualTable(divisor: number): { readonly lines: string[]; reado
         `Trend over ${DAYS} days since enrolment, ${data.name}, ${TREND_UNITS} units in each arm: found in ${percent(size)} of ${TREND_RUNS / divisor} tests without one`,
     ),
   ];
-  const missed = (bands[0]?.band ?? runs) / runs;
+  const missed = (bands[0]?.band ?? runs) / (bands[0]?.shown ?? runs);
   const wrongTrends = trends.filter(({ size }) => size < TREND_SIZE[0] || size > TREND_SIZE[1]);
   return {
     lines,
@@ -69,7 +69,7 @@ function accruals({ data, step: [ofControl, ofVariant] }: Accrued, runs: number,
   const [control, variant] = [0, 1].map((arm) => data.sampler(seedOf("accrual", [[at, arm]])));
   if (control === undefined || variant === undefined) throw new Error("two arms have two samplers");
   const band = { alpha: ALPHA, planned: 2 * TO };
-  const misses = { band: 0, moment: 0, last: 0 };
+  const misses = { shown: 0, band: 0, moment: 0, last: 0 };
   for (let run = 0; run < runs; run++) {
     const [c, t] = [running(), running()];
     const missed = { band: false, moment: false, last: false };
@@ -86,6 +86,7 @@ function accruals({ data, step: [ofControl, ofVariant] }: Accrued, runs: number,
       missed.moment ||= z > Z;
       missed.last = z > Z;
     }
+    if (isShown) misses.shown++;
     for (const key of ["band", "moment", "last"] as const) if (missed[key]) misses[key]++;
   }
   return misses;

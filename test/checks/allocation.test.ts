@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { allocation } from "../../src/checks/allocation.ts";
-import { type LogShape, planOf, reductionOf, unitFilter, variantsOf } from "./make.ts";
+import { type LogShape, planOf, reductionOf, rowFilter, unitFilter, variantsOf } from "./make.ts";
 
 function check(shape: LogShape, plan = planOf()) {
   const found = allocation(plan, reductionOf(plan, shape));
@@ -83,6 +83,31 @@ describe("allocation", () => {
     expect(found.sentence).toContain("looks past enrolment, so the variant can change who is removed");
     expect(found.remedy).toContain("when: at-enrolment");
     expect(found.parts[1]?.figures.brokenAt).toBe("filter:robots");
+  });
+
+  // R 4.2.2: chisq.test(c(5335, 5020))$p.value 0.001965, c(5335, 5000) 0.0009833: the second filter alone makes it fail
+  it("blames the filter that moved the split most, not the one that tipped it", () => {
+    const plan = planOf({ filters: [unitFilter("robots"), unitFilter("staff")] });
+    const found = check(
+      { enrolled: [5335, 5335], ended: { "filter:robots": [0, 315], "filter:staff": [0, 20] } },
+      plan,
+    );
+    expect(found.parts[1]?.result).toBe("fail");
+    expect(found.parts[1]?.figures.brokenAt).toBe("filter:robots");
+  });
+
+  it("shows the groups after each step of the flow where the split is uneven", () => {
+    const plan = planOf({ filters: [rowFilter("old site"), unitFilter("robots")] });
+    const soundness = {
+      beforeLines: ["rejected", "duplicate", "filter:old site"].map((line) => ({ line, byVariant: [5335, 5340] })),
+    };
+    const found = check({ enrolled: [5335, 5335], ended: { "filter:robots": [0, 335] }, soundness }, plan);
+    expect(found.figures.steps).toMatchObject([
+      { after: "rejected", counts: { list: 5335, calendar: 5340 } },
+      { after: "duplicate", counts: { list: 5335, calendar: 5340 } },
+      { after: "filter:old site", counts: { list: 5335, calendar: 5335 }, p: 1 },
+      { after: "filter:robots", counts: { list: 5335, calendar: 5000 } },
+    ]);
   });
 
   it.each([

@@ -1,7 +1,7 @@
 import { mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { dirname, join } from "node:path";
-import { closeout, type Outcome } from "../../src/index.ts";
+import { closeout, type Outcome, type Verified, verify } from "../../src/index.ts";
 
 export interface Run {
   readonly outcome: Outcome;
@@ -9,6 +9,8 @@ export interface Run {
   readonly files: Readonly<Record<string, string>>;
   /** What else stands in the plan's folder afterwards. */
   readonly left: readonly string[];
+  /** What verify says of the report with its cells and without the log; null without a report. */
+  readonly withoutLog: Verified | null;
   /** The folder that all of this lay in. */
   readonly folder: string;
 }
@@ -25,8 +27,10 @@ export async function run(plan: string, files: Readonly<Record<string, string | 
     const outcome = await closeout(join(folder, "plan.yaml"), { out: join(folder, "report") });
     const left = readdirSync(folder).filter((name) => name !== "plan.yaml" && !(name in files));
     const written = left.includes("report") ? readdirSync(join(folder, "report")).sort() : [];
+    const report = join(folder, "report/report.html");
     return {
       outcome,
+      withoutLog: outcome.status === 0 ? await verify(report, { cells: true }) : null,
       files: Object.fromEntries(written.map((name) => [name, readFileSync(join(folder, "report", name), "utf8")])),
       left,
       folder,

@@ -61,6 +61,7 @@ export function planFromYaml(text: string): Plan {
     metrics,
     filters,
     subgroups: list(at(root, "subgroups")).map(plain),
+    askedAfterwards: { subgroups: [], metrics: [], columns: [], numericColumns: [] },
     decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
     plannedUnits: numberAt(at(root, "planned"), "units"),
     looks: null,

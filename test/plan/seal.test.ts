@@ -45,6 +45,11 @@ describe("the fingerprint of a rule", () => {
     ["the worthwhile effect", plan.replace("5%", "3%"), "metrics"],
     ["what is counted", plan.replace("of: {event: booking}\n", "of: {event: sale}\n"), "metrics"],
     ["another deciding metric", plan.replace("- name: Fare\n", "- name: Fare\n    role: primary\n"), "metrics"],
+    [
+      "a limit",
+      plan.replace("- name: Fare\n", "- name: Fare\n    role: guardrail\n    margin: {relative: 5%}\n"),
+      "metrics",
+    ],
     ["the shares", plan.replace("{name: calendar}", "{name: calendar, allocation: 2}"), "allocation"],
     [
       "which variant is the control",

@@ -55,6 +55,7 @@ export function inputs(over: Partial<ReportInputs> & { readonly plan: Plan; read
     accruals: [],
     daysSince: [],
     subgroups: [],
+    afterwards: { subgroups: [], metrics: null },
     conclusion: { decision: "not-settled", variant: null, sentence: "", reasons: [] },
     ...over,
     effects: withFamilies(plan, effects).map((effect) => withPower(effect, plan, units)),

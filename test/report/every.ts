@@ -2,6 +2,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adjustedCase } from "./adjusted-case.ts";
 import { adopt, keepControl, little, notSettled, several, undecidable } from "./cases.ts";
 import { farFromNormal } from "./drawn.ts";
+import { grouped } from "./groups.ts";
 import { hostile, hostileMeanwhile } from "./hostile.ts";
 import { atALook, meanwhile } from "./meanwhile.ts";
 import { quantiles } from "./quantiles.ts";
@@ -20,6 +21,7 @@ export const everyCase: readonly (readonly [name: string, inputs: ReportInputs])
   ["quantiles", quantiles],
   ["incidents", meanwhile],
   ["an interim look", atALook],
+  ["days and levels", grouped],
   ["hostile", hostile],
   ["a second run", secondRun],
   ["a third run with another rule", thirdRun],

@@ -1,5 +1,5 @@
 import type { ReportInputs } from "../../src/report/types.ts";
-import { adopt } from "./cases.ts";
+import { grouped } from "./groups.ts";
 import { meanwhile } from "./meanwhile.ts";
 
 /** Text that would do harm if any of it reached the page, the style, a template or the terminal as it stands. */
@@ -28,14 +28,15 @@ const KEPT_MORE = new Set([
   "result",
   "method",
   "absent",
+  "standing",
   "planSha256",
   "sha256",
   "timezone",
 ]);
 const KEPT_VALUES = new Set(["value", "q", "at"]);
 
-/** The case "adopt" with poison in every name and text that comes from a plan, a log or a check. */
-export const hostile: ReportInputs = poisoned(adopt, "") as ReportInputs;
+/** The cases "adopt" and "days and levels" with poison in every name and text that comes from a plan, a log or a check. */
+export const hostile: ReportInputs = poisoned(grouped, "") as ReportInputs;
 
 /** The same with incidents, of which the choices' names are made. */
 export const hostileMeanwhile: ReportInputs = poisoned(meanwhile, "") as ReportInputs;

@@ -118,7 +118,7 @@ describe("the JSON Schema", () => {
     expect(schema.$schema).toBe("https://json-schema.org/draft/2020-12/schema");
     expect(schema.additionalProperties).toBe(false);
     expect(schema.required).toEqual(
-      "format experiment conclusion flow checks effects subgroups accrual sinceEnrolment sensitivity changes provenance".split(
+      "format experiment conclusion flow checks effects subgroups accrual sinceEnrolment sensitivity askedAfterwards changes provenance".split(
         " ",
       ),
     );

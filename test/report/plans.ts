@@ -131,6 +131,7 @@ export const farePlan: Plan = {
     },
   ],
   subgroups: [],
+  askedAfterwards: { subgroups: [], metrics: [], columns: [], numericColumns: [] },
   decision: { confidence: 0.95, power: 0.8, adoptWhen: "shown-better", primaries: "all", interval: "normal" },
   plannedUnits: 100_000,
   looks: null,

@@ -109,6 +109,7 @@ export function reductionOf(plan: Plan, flow: HandFlow): Reduction {
       soundness: soundnessOf(plan, enrolled),
       firstKeptUs: 1_772_407_300_000_000n,
       lastKeptUs: 1_773_615_500_000_000n,
+      subgroupsAfterwards: [],
     },
     metrics: plan.metrics.map((metric) => cellsOf(metric.name, plan)),
     groups: plan.metrics.map(({ name }) => ({ metric: name, byDay: null, byLevel: [], sinceEnrolment: null })),

@@ -20,7 +20,7 @@ describe("page one of a rerun", () => {
       "Adopt the calendar.",
       "The first run said the same.",
       "What changed: the filter \u201cstaff accounts\u201d was added (staff book for training). The log is the same.",
-      "\u201cstaff accounts\u201d removed 1,204 visitors: 614 with \u201clist\u201d and 590 with \u201ccalendar\u201d.",
+      "\u201cstaff accounts\u201d removed 1,204 visitors: 614 with \u201clist\u201d and 590 with \u201ccalendar\u201d, as even as chance would make it.",
       "Booked",
       "+10.0% (+6.5% to +13.7%)",
       "at least 5% more",
@@ -33,6 +33,19 @@ describe("page one of a rerun", () => {
     const places = order.map((sentence) => page.indexOf(sentence));
     expect(order.filter((_, i) => (places[i] ?? -1) < 0)).toEqual([]);
     expect(places).toEqual([...places].sort((a, b) => a - b));
+  });
+
+  // Pearson's chi-square of 614 against 400 by hand: 107^2 / 507 twice, 45.2 on 1 degree of freedom; of 3 against 1 nothing is said.
+  it("says when a filter that came new removed more from one variant than chance would", async () => {
+    const withStaff = async (removed: readonly number[]) => {
+      const units = removed.reduce((sum, n) => sum + n, 0);
+      const unitLines = secondRun.reduction.unitLines.map((line) =>
+        line.id === "filter:staff accounts" ? { ...line, units, byVariant: removed } : line,
+      );
+      return pageOne((await renderReport({ ...secondRun, reduction: { ...secondRun.reduction, unitLines } })).html);
+    };
+    expect(await withStaff([614, 400])).toMatch(/less even than chance would make it \(p\s<\s0\.0001\)/);
+    expect(await withStaff([3, 1])).toMatch(/3 with \u201clist\u201d and 1 with \u201ccalendar\u201d\. /);
   });
 
   it("draws a caution for a plan that was changed after a result, and says both versions of a changed rule", () => {

@@ -32,6 +32,13 @@ describe("lines that differ", () => {
   });
 });
 
+// The worked example of Cormen, Leiserson, Rivest and Stein, Introduction to Algorithms, 15.4, from memory: BCBA, four letters.
+it("leave as much in common as there is", () => {
+  const [a, b] = [[..."ABCBDAB"], [..."BDCABA"]];
+  const left = hunks(a, b).reduce((sum, { given }) => sum + given.length, 0);
+  expect(a.length - left).toBe(4);
+});
+
 const PAGE = `<body>
 <h1>Two signs</h1>
 <h2 id="decision-title"><span class="number">1</span> Decision</h2>

@@ -32,7 +32,7 @@ describe("a report as it was written", () => {
   it("holds, and what lies beside it too", async () => {
     const { status, text } = await verify(file);
     expect(text).toMatch(/report\.html holds\.\nRecomputed from 1 file of the log \(600 rows\)/);
-    expect(text).toContain("report.json, effects.csv and summary.md beside it are the same");
+    expect(text).toContain("report.json, effects.csv, summary.md and cells.json beside it are the same");
     expect(status).toBe(0);
   });
 
@@ -145,11 +145,11 @@ describe("a log that was changed since", () => {
     writeFileSync(join(on.folder, "log.csv"), `${LOG}\n`);
     const { status, text } = await verify(file);
     expect(status).toBe(4);
-    // the heading, the page and report.json beside it
-    const [, page, json, ...more] = text.split("\n");
+    // the heading, the page, the fingerprint of the cells, and two files beside it
+    const [, page, print, ...beside] = text.split("\n");
     expect(page).toContain("the file log.csv is not the one");
-    expect(json).toContain("report.json beside it");
-    expect(more).toEqual([]);
+    expect(print).toContain("cells.json, SHA-256");
+    expect(beside.map((line) => /- (\S+) beside it/.exec(line)?.[1])).toEqual(["report.json", "cells.json"]);
   });
 
   it("is not there: status 2; or holds no row: status 3", async () => {

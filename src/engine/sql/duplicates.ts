@@ -13,7 +13,7 @@ import { join, type Statement, sql } from "./sql.ts";
  * order of first mention, numbers by value, text by bytes, missing last.
  */
 export function contentOrder(layout: Layout): Statement[] {
-  const columns = layout.columns.slice(0, layout.ordered).map((_, c) => stored(layout, c));
+  const columns = layout.columns.slice(0, layout.kept).map((_, c) => stored(layout, c));
   return [sql`event`, ...columns].map((column) => sql`${column} ASC NULLS LAST`);
 }
 

@@ -197,6 +197,12 @@ export function asTime(
   switch (kind) {
     case "instant":
       return { clockUs: dialect.epochUs(column), offsetUs: sql`CAST(0 AS BIGINT)` };
+    case "nanoseconds": {
+      // The cast cuts toward 1970, so before it a time would move to the next microsecond.
+      const cut = sql`try_cast(${column} AS TIMESTAMP)`;
+      const over = sql`CASE WHEN ${column} < ${cut} THEN 1 ELSE 0 END`;
+      return { clockUs: sql`(${dialect.epochUs(cut)} - ${over})`, offsetUs: sql`CAST(NULL AS BIGINT)` };
+    }
     case "timestamp":
     case "date":
       // Dates reach further than timestamps do.

@@ -98,7 +98,7 @@ function judgedRows(
 /** The columns that later stages order rows by, as they are stored: numbers by value, all else as text. */
 export function storedColumns(layout: Layout): Statement[] {
   const own = layout.columns
-    .slice(0, layout.ordered)
+    .slice(0, layout.kept)
     .map((_, c) => (layout.standIns[c] == null ? stored(layout, c) : null));
   return own.filter((column) => column !== null);
 }

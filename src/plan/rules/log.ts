@@ -1,6 +1,6 @@
 import type { Problem } from "../types.ts";
 import type { Path } from "../yaml.ts";
-import { type Item, items, type Loose, mapping, parts } from "./loose.ts";
+import { allMetrics, type Item, items, type Loose, mapping, parts } from "./loose.ts";
 
 /** What the entries of `log` must hold together, and what the plan may ask of a log without events or without time. */
 export function logRules(plan: Loose): readonly Problem[] {
@@ -54,7 +54,7 @@ const OF_TIME = ["days", "first", "last"];
 
 function timeNeeds(plan: Loose): readonly Path[] {
   const enrolment = mapping(plan.enrolment) ?? {};
-  const covariates = items(plan, "metrics").filter(({ data }) => "days-before" in (mapping(data["adjust-for"]) ?? {}));
+  const covariates = allMetrics(plan).filter(({ data }) => "days-before" in (mapping(data["adjust-for"]) ?? {}));
   return [
     ...["from", "before"].filter((key) => key in enrolment).map((key): Path => ["enrolment", key]),
     ...["follow-up", "incidents"].filter((key) => key in plan).map((key): Path => [key]),

@@ -25,9 +25,20 @@ export function items(plan: Loose, section: string): readonly Item[] {
   });
 }
 
+/** The metrics that were asked afterwards. */
+export function afterwards(plan: Loose): readonly Item[] {
+  const asked = mapping(plan["asked-afterwards"]);
+  return asked === null
+    ? []
+    : items(asked, "metrics").map(({ path, data }) => ({ path: ["asked-afterwards", ...path], data }));
+}
+
+/** All metrics, planned and asked afterwards. */
+export const allMetrics = (plan: Loose): readonly Item[] => [...items(plan, "metrics"), ...afterwards(plan)];
+
 /** `of` and `per` of every metric. */
 export function parts(plan: Loose): readonly Item[] {
-  return items(plan, "metrics").flatMap(({ path, data }) =>
+  return allMetrics(plan).flatMap(({ path, data }) =>
     ["of", "per"].flatMap((key) => {
       const part = mapping(data[key]);
       return part === null ? [] : [{ path: [...path, key], data: part }];

@@ -1,5 +1,5 @@
 import type { Problem } from "../types.ts";
-import { type Item, items, type Loose, mapping } from "./loose.ts";
+import { afterwards, type Item, items, type Loose, mapping } from "./loose.ts";
 import { summaryRules } from "./summaries.ts";
 
 /** What the role of a metric asks for and allows, and what its summary does. */
@@ -14,6 +14,7 @@ export function metricRules(plan: Loose): readonly Problem[] {
       ...(adoptWhen === "shown-worthwhile" ? worthwhileAskedFor(metric) : []),
       ...summaryRules(metric),
     ]),
+    ...afterwards(plan).flatMap(summaryRules),
   ];
 }
 

@@ -1,10 +1,11 @@
 import type { Problem } from "../types.ts";
-import { items, type Loose } from "./loose.ts";
+import { allMetrics, items, type Loose } from "./loose.ts";
 
 /** Variants, metrics, filters and incidents have names of their own, each among its own. */
 export function nameRules(plan: Loose): readonly Problem[] {
-  return ["variants", "metrics", "filters", "incidents"].flatMap((section) => {
-    const named = items(plan, section).filter(({ data }) => typeof data.name === "string");
+  return (["variants", "metrics", "filters", "incidents"] as const).flatMap((section) => {
+    const all = section === "metrics" ? allMetrics(plan) : items(plan, section);
+    const named = all.filter(({ data }) => typeof data.name === "string");
     return named.flatMap(({ path, data }, i): readonly Problem[] => {
       if (named.findIndex((other) => other.data.name === data.name) === i) return [];
       const message = `This name stands a second time in ${section}. Give each its own.`;

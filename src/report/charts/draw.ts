@@ -25,7 +25,8 @@ export async function draw(spec: TopLevelSpec, id: string, text: DrawingText | n
   const inside = /^<svg [^>]*viewBox="([^"]*)"[^>]*>(.*)<\/svg>$/s.exec(svg);
   const [, viewBox, content] = inside ?? [];
   if (viewBox === undefined || content === undefined) throw new Error(`the drawing ${id} is not one svg element`);
-  const own = shorten(withPrefix(withoutLabels(content), id));
+  // A name of the plan may stand at an axis or in the description.
+  const own = withoutControls(shorten(withPrefix(withoutLabels(content), id)));
   if (text === null) {
     return { svg: `<svg viewBox="${viewBox}" aria-hidden="true" focusable="false">${own}</svg>` };
   }

@@ -47,6 +47,6 @@ export interface BlindInputs {
   readonly planText: string;
   readonly planSha256: string;
   readonly version: string;
-  readonly reduction: Omit<Reduction, "metrics">;
+  readonly reduction: Omit<Reduction, "metrics" | "groups">;
   readonly checks: readonly Check[];
 }

@@ -41,7 +41,7 @@ export interface LedgerLine {
 
 export function countedSection(
   plan: Plan,
-  reduction: Omit<Reduction, "metrics">,
+  reduction: Omit<Reduction, "metrics" | "groups">,
   rejectsFile = "rejects.csv",
 ): CountedSection {
   return {

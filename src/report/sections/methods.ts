@@ -1,10 +1,11 @@
-import { anyIsEnough, type Choices, type Effect } from "../../decision/index.ts";
-import type { Reduction } from "../../engine/types.ts";
+import { anyIsEnough, type Effect } from "../../decision/index.ts";
+
 import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
 import { list, planPercent } from "../../words/index.ts";
 import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
 import { type FromWhat, fromWhat } from "./from-what.ts";
+import { groupMethods } from "./group-methods.ts";
 import { lookCaution, lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
@@ -22,9 +23,9 @@ export interface Method {
 }
 
 export function methodsSection(inputs: ReportInputs): MethodsSection {
-  const { plan, reduction, effects, choices, conclusion } = inputs;
+  const { plan } = inputs;
   return {
-    methods: methods(plan, effects, choices, reduction, conclusion.decision !== "undecidable"),
+    methods: methods(inputs),
     cautions: cautions(plan),
     ...fromWhat({
       ...inputs,
@@ -49,13 +50,9 @@ function registeredText(plan: Plan): string | null {
 }
 
 /** Only what this report uses. */
-function methods(
-  plan: Plan,
-  effects: readonly Effect[],
-  choices: readonly Choices[],
-  reduction: Reduction,
-  isDecided: boolean,
-): MethodsSection["methods"] {
+function methods(inputs: ReportInputs): MethodsSection["methods"] {
+  const { plan, effects, choices, reduction } = inputs;
+  const isDecided = inputs.conclusion.decision !== "undecidable";
   const shown = effects.flatMap(({ contrast, adjusted }) =>
     adjusted === null ? [contrast] : [contrast, adjusted.contrast],
   );
@@ -156,6 +153,7 @@ function methods(
         "Chow, Shao and Wang 2008, Sample Size Calculations in Clinical Research, 3.2; what is overstated: Gelman and Carlin 2014, Perspectives on Psychological Science 9, 641-651",
     },
     ...normalityMethods(plan, effects),
+    ...groupMethods(plan, inputs),
     {
       when: choices.some(({ rows }) => rows.length > 1),
       name: "Other reasonable choices",
@@ -202,6 +200,8 @@ function ranges(source: string): string {
 
 /** "Relative difference" is `method-relative-difference`. */
 function idOf(name: string): string {
+  // the plan's own word stands in this one
+  if (/^As .* enrolled$/s.test(name)) return "method-accrual";
   return `method-${name.toLowerCase().replace(/[^a-z]+/g, "-")}`;
 }
 

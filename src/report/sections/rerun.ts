@@ -1,6 +1,7 @@
 import { metricOf, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Plan } from "../../plan/index.ts";
-import { capital, count, list, plural, quoted } from "../../words/index.ts";
+import { pearson } from "../../stats/index.ts";
+import { capital, count, list, plural, pText, quoted } from "../../words/index.ts";
 import type { ChangesJson, EffectChange } from "../changes/types.ts";
 import { isOtherConclusion, nameOf, ordinal, saidBefore, shownTexts, whatChanged } from "../changes/words.ts";
 import { shortFingerprint } from "../history.ts";
@@ -54,8 +55,22 @@ function removedSentences({ plan: changes, flow }: ChangesJson, plan: Plan): str
     const by = Object.entries(line.byVariant?.after ?? {}).map(([name, n]) => `${count(n)} with ${quoted(name)}`);
     const { one, many } = plan.unitCalled;
     const who = `${plural(line.after, one, many)}${by.length === 0 ? "" : `: ${list(by)}`}`;
-    return [`${capital(quoted(item ?? ""))} removed ${who}.`];
+    return [`${capital(quoted(item ?? ""))} removed ${who}${evenness(line.byVariant?.after ?? {}, plan)}.`];
   });
+}
+
+const EXPECTED_AT_LEAST = 5; // of each variant, for a chi-square test
+const UNEVEN_BELOW = 0.01; // as for any check in which arms differ
+
+/** Whether the variants lost as their planned shares would have it; of few nothing is said. */
+function evenness(byVariant: Readonly<Record<string, number>>, { variants }: Plan): string {
+  const counts = variants.map(({ name }) => byVariant[name] ?? 0);
+  const shares = variants.map(({ allocation }) => allocation);
+  const total = counts.reduce((sum, n) => sum + n, 0);
+  const smallest = Math.min(...shares) / shares.reduce((sum, share) => sum + share, 0);
+  if (total * smallest < EXPECTED_AT_LEAST) return "";
+  const { p } = pearson(counts, shares);
+  return p < UNEVEN_BELOW ? `, less even than chance would make it (${pText(p)})` : ", as even as chance would make it";
 }
 
 function estimateRow(effect: EffectChange, plan: Plan) {

@@ -38,3 +38,15 @@ const times = (n: number): string => (n === 0 ? "never" : n === 1 ? "once" : n =
 
 /** 1970-01-01 was a Thursday; Monday is 0. */
 const weekdayOf = (day: number): number => (((day + 3) % 7) + 7) % 7;
+
+/** What of time this report cannot tell, and why; nothing where it tells all. */
+export function untoldOfTime({ log, followUp, unitCalled: { many } }: Plan): string[] {
+  if (log.some(({ columns }) => columns.time === null)) {
+    return [
+      `The log has no times: how the differences came about as ${many} enrolled, and by day since enrolment, is not told.`,
+    ];
+  }
+  return followUp === null || followUp.days < 2
+    ? ["Differences by day since enrolment are not told: the plan has no follow-up of two days or more."]
+    : [];
+}

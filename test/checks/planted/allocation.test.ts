@@ -55,7 +55,9 @@ describe("a planted fault of the allocation", () => {
     const found = await judged(planText(), { rows });
     expect(results(found, ["allocation", "allocation-by-day"])).toEqual(["fail", "fail"]);
     expect(found.find("allocation-by-day")?.sentence).toContain("on 2 to 4 March 2026 enrolled were");
-    expect(found.find("allocation-by-day")?.remedy).toContain("(enrolment, from: 2026-03-05)");
+    expect(found.find("allocation-by-day")?.remedy).toContain(
+      "count only the days from 5 March 2026 on (enrolment: from)",
+    );
     expect(found.find("allocation")?.sentence).toContain(
       'It lies on 2 to 4 March 2026: 1,500 visitors with "list" and 300 with "calendar"; without them the groups are 5,500 visitors with "list" and 5,500 with "calendar", as planned (p = 1).',
     );

@@ -68,10 +68,10 @@ describe("planted hours without rows", () => {
     const bookings = later(rows, "booking", 60).filter(({ at }) => !at.startsWith("2026-03-05T07"));
     const found = (await judged(planText({ second: true }), { rows, second: bookings })).find("gaps");
     expect(found?.result).toBe("caution");
-    expect(found?.sentence).toContain('In 1 hour "bookings.csv" has no row');
+    expect(found?.sentence).toContain("In 1 hour entry 2 of the log has no row");
     expect(found?.parts.map(({ about, result }) => [about, result])).toEqual([
-      ['"log.csv"', "pass"],
-      ['"bookings.csv"', "caution"],
+      ["entry 1 of the log", "pass"],
+      ["entry 2 of the log", "caution"],
       ["by variant", "pass"],
     ]);
   });

@@ -20,19 +20,26 @@ describe("planted rows outside the span", () => {
 });
 
 describe("planted visitors not followed to the end", () => {
-  /** 900 enrolled early, the others less than 7 days before the log ends. */
+  /** 900 enrolled early, two exactly 7 days before the log ends, the others later. */
   const log = (late: number) => {
     const early = [...enrolled("list", 450, 0, 13), ...enrolled("calendar", 450, 0, 13)];
     const end = { visitor: "list 0 0", at: timeText(21 * DAY), event: "booking" };
-    return [...early, ...enrolled("list", late / 2, 14.5, 15.5), ...enrolled("calendar", late / 2, 14.5, 15.5), end];
+    const exactly = [...enrolled("list", 1, 14, 14.00001), ...enrolled("calendar", 1, 14, 14.00001)];
+    return [
+      ...early,
+      ...exactly,
+      ...enrolled("list", late / 2, 14.5, 15.5),
+      ...enrolled("calendar", late / 2, 14.5, 15.5),
+      end,
+    ];
   };
-  // METHODS 7: over 10% cautions; 100 of 1,000 is not over
+  // METHODS 7: over 10% cautions; 100 of 1,002 is not over, 102 of 1,004 is
   it.each([
     [100, "exclude", "pass"],
     [102, "exclude", "caution"],
     [100, "keep", "pass"],
     [102, "keep", "caution"],
-  ])("%i beside 900, under %s, are a %s", async (late, incomplete, result) => {
+  ])("%i beside 902, under %s, are a %s", async (late, incomplete, result) => {
     const plan = planText({ rest: `follow-up: {days: 7, incomplete: ${incomplete}}` });
     const found = (await judged(plan, { rows: log(late) })).find("follow-up");
     expect(found?.result).toBe(result);

@@ -3,6 +3,7 @@ import { join } from "node:path";
 import { planFromYaml } from "../plan.ts";
 import { clockOf } from "../time.ts";
 import type { Lists, RawFile } from "../types.ts";
+import { withDays } from "./days.ts";
 import { type Dice, diceOf } from "./dice.ts";
 import { withIncidents } from "./incidents.ts";
 import { drawLog, type RandomSource } from "./log.ts";
@@ -26,9 +27,10 @@ export function randomCase(seed: number): RandomCase {
   const dice = diceOf(seed);
   // Dice of their own, so that the other draws of a seed stay what they were.
   const few = drawShape(dice);
-  const { plan: plain, shape } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
-  const split = withSubgroups(diceOf(seed + 4_000_000), plain, few);
-  const drawn = withIncidents(diceOf(seed + 5_000_000), split, shape);
+  const { plan: plain, shape: many } = withQuantiles(diceOf(seed + 3_000_000), drawPlan(dice, few), few);
+  const divided = withSubgroups(diceOf(seed + 4_000_000), plain, few);
+  const { plan: daily, shape } = withDays(diceOf(seed + 5_000_000), divided, many);
+  const drawn = withIncidents(diceOf(seed + 6_000_000), daily, shape);
   const logFirst = dice.chance(0.5);
   const columns = shape.sources.map(({ names }) => columnsPiece(dice, names));
   const plan = (patterns: readonly string[]) => {

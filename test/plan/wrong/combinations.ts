@@ -154,6 +154,30 @@ export const COMBINATIONS: readonly WrongPlan[] = [
     ]),
   },
   {
+    title: "what is asked afterwards with a role, a name that is taken, or a subgroup that is planned",
+    plan: {
+      subgroups: "subgroups: [country]",
+      asked: `asked-afterwards:
+  subgroups: [«country», platform]
+  metrics:
+    - {name: Fare, «role»: primary, summary: mean, of: {event: booking, sum: fare}}
+    - {name: «Booked», summary: mean, of: {event: booking}}
+    - {name: Rate, summary: proportion, of: {event: booking, «sum»: fare}}`,
+    },
+    says: [
+      ["asked-afterwards", "country is named twice. Remove one of the two."],
+      [
+        "asked-afterwards",
+        "Unknown key. Known here: name, summary, of, per, quantile, in, good-is, cap, adjust-for, without-rows.",
+      ],
+      ["asked-afterwards", "This name stands a second time in metrics. Give each its own."],
+      [
+        "asked-afterwards",
+        "A proportion counts units with a row, so it takes no sum. Remove it, or write summary: mean.",
+      ],
+    ],
+  },
+  {
     title: "a subgroup column named twice",
     plan: { subgroups: "subgroups: [country, platform, «country»]" },
     says: [["subgroups, number 3", "country is named twice. Remove one of the two."]],

@@ -52,10 +52,10 @@ export const SHAPE: readonly WrongPlan[] = [
       ],
     ],
   },
-  ...["asked-afterwards", "engine"].map((key): WrongPlan => {
+  ...["engine"].map((key): WrongPlan => {
     const known =
       "experiment, question, unit-called, log, timezone, enrolment, variants, ended, follow-up, metrics, filters, " +
-      "incidents, subgroups, decision, planned, looks, forecast, registered, owner, link, limits, notes, decided";
+      "incidents, subgroups, asked-afterwards, decision, planned, looks, forecast, registered, owner, link, limits, notes, decided";
     return {
       title: `${key}, which a later version knows`,
       plan: { x: `«${key}»: {}` },
