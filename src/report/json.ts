@@ -29,7 +29,11 @@ export function reportJson(inputs: ReportInputs): ReportJson {
     sensitivity: inputs.choices.map(sensitivityJson),
     askedAfterwards: afterwardsJson(inputs),
     changes: null,
-    provenance: provenanceJson(inputs),
+    provenance: {
+      ...provenanceJson(inputs),
+      cells: inputs.cellsSha256 ?? null,
+      fromCells: inputs.fromCells === true,
+    },
   };
   const rounded = twelveDigits(report);
   return rerun === undefined ? rounded : { ...rounded, changes: twelveDigits(changesJson(rerun, rounded)) };

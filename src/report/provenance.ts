@@ -7,8 +7,6 @@ export function provenanceJson(of: {
   readonly planSha256: string;
   readonly planText: string;
   readonly reduction: Pick<Reduction, "inputs" | "lists" | "engine">;
-  readonly cellsSha256?: string | undefined;
-  readonly fromCells?: boolean | undefined;
 }): ProvenanceJson {
   const { inputs, lists, engine } = of.reduction;
   return {
@@ -17,7 +15,5 @@ export function provenanceJson(of: {
     inputs: inputs.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
     lists: lists.map(({ name, bytes, sha256, rows }) => ({ name, bytes, sha256, rows })),
     engine: { name: engine.name, version: engine.version },
-    cells: of.cellsSha256 ?? null,
-    fromCells: of.fromCells === true,
   };
 }

@@ -248,12 +248,7 @@ export const reportSchema = z.strictObject({
     .nullable()
     .describe("What was asked after the test began: unplanned, it decides nothing."),
   changes: changesSchema,
-  provenance: z.strictObject({
-    version: z.string(),
-    plan: z.strictObject({ sha256: fingerprint, text: z.string() }),
-    inputs: z.array(file),
-    lists: z.array(file),
-    engine: z.strictObject({ name: z.string(), version: z.string() }),
+  provenance: provenanceSchema.extend({
     cells: fingerprint.nullable().describe("SHA-256 of cells.json beside the report."),
     fromCells: z.boolean().describe("Made from cells that an earlier report had kept, without reading the log."),
   }),

@@ -40,7 +40,7 @@ export interface ReportJson {
     readonly subgroups: readonly SubgroupJson[];
   } | null;
   readonly changes: ChangesJson | null;
-  readonly provenance: ProvenanceJson;
+  readonly provenance: ReportProvenanceJson;
 }
 
 export interface FlowJson {
@@ -207,6 +207,10 @@ export interface ProvenanceJson {
     readonly rows: number;
   }[];
   readonly engine: { readonly name: string; readonly version: string };
+}
+
+/** A report keeps its cells too. */
+export interface ReportProvenanceJson extends ProvenanceJson {
   /** SHA-256 of cells.json; null where none was kept. */
   readonly cells: string | null;
   /** Made from cells that an earlier report had kept, without reading the log. */
