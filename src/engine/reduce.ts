@@ -36,7 +36,7 @@ import {
   units,
 } from "./sql/index.ts";
 import type { MetricCells, MetricLedger, Reduction } from "./types.ts";
-import { dayRuns, localDay, offsetsByLocalTime } from "./zone.ts";
+import { type DayRun, dayAt, dayRuns, offsetsByLocalTime, type Step } from "./zone.ts";
 
 export interface ReduceOptions {
   readonly threads?: number | undefined;
@@ -171,7 +171,7 @@ async function stages(
   const subgroups = await levels(plan, layout, engine, dialect);
   const levelCodes = subgroups.map(({ code }) => code);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
-  const firstDay = await firstEnrolmentDay(plan, layout, engine);
+  const firstDay = await firstEnrolmentDay(plan, layout, days, engine);
   await engine.run(candidates(plan, layout, days, firstDay, levelCodes, logEndUs, dialect));
   await engine.run(units());
   stage("adding up cells", 0.9);
@@ -229,11 +229,16 @@ function refuseOtherCounts(plan: Plan, metrics: readonly MetricCells[], ledgers:
 }
 
 /** The local day on which the first analysed unit was enrolled. */
-async function firstEnrolmentDay(plan: Plan, layout: Layout, engine: Engine): Promise<number | null> {
+async function firstEnrolmentDay(
+  plan: Plan,
+  layout: Layout,
+  days: readonly Step<DayRun>[],
+  engine: Engine,
+): Promise<number | null> {
   if (!layout.hasTime) return null;
   const [range = {}] = await engine.query(enrolmentRange(unitLineIds(plan).length - 1));
   const firstUs = wholeOrNull(range, "first_us");
-  return firstUs === null ? null : localDay(firstUs, plan.timezone);
+  return firstUs === null ? null : dayAt(firstUs, days);
 }
 
 async function spansOfLog(layout: Layout, engine: Engine): Promise<SourceSpan[]> {

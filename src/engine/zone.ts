@@ -61,6 +61,13 @@ export function dayRuns(timezone: string, firstUs: bigint, lastUs: bigint): Step
   });
 }
 
+/** The local day of an instant, as a statement finds it in the table. */
+export function dayAt(us: bigint, runs: readonly Step<DayRun>[]): number {
+  const { from, value } = runs.findLast((run) => run.from <= us) ??
+    runs[0] ?? { from: us, value: { first: 0, days: 1 } };
+  return value.first + Math.min(Number((us - from) / DAY_US), value.days - 1);
+}
+
 /** Days since 1970-01-01 of the local date at an instant. */
 export function localDay(us: bigint, timezone: string): number {
   const date = instant(us).toZonedDateTimeISO(timezone).toPlainDate();
