@@ -3,7 +3,7 @@ import type { DecisionSection } from "./sections/decision.ts";
 import type { ForestGroup, ForestTable } from "./sections/forest.ts";
 
 /** What one sheet of A4 holds in the print style, by the line of text. */
-const SHEET = 54;
+const SHEET = 52;
 const LETTERS_A_LINE = 88;
 const LETTERS_IN_NAME = 30;
 const HEAD = 7;
@@ -13,17 +13,20 @@ const MOST_PARAGRAPHS = 5;
 
 /** What page one is without the pages behind it: no links to them, no tables that open, and no more rows than fit. */
 export function pageOne(page: Page): Page {
-  return { ...page, terms: {}, decision: shortened(page.decision) };
+  // Before and now stand in the forest plot's place: on one sheet there is room for one of them.
+  const rerun = page.rerun === null ? null : { ...page.rerun, estimates: [] };
+  const told = rerun === null ? [] : [rerun.said, ...rerun.sentences, ...rerun.after, rerun.runs];
+  return { ...page, terms: {}, rerun, decision: shortened(page.decision, told) };
 }
 
 /** Rows in their order, what decides first; how many sentences and rows more there are is said. */
-function shortened(decision: DecisionSection): DecisionSection {
+function shortened(decision: DecisionSection, before: readonly string[]): DecisionSection {
   const { forest, paragraphs } = decision;
   const kept = paragraphs.slice(0, MOST_PARAGRAPHS);
   const more = paragraphs.length - kept.length;
   const told = more === 0 ? kept : [...kept, `The report says ${more} more.`];
   if (forest === null) return { ...decision, paragraphs: told, reasons: [] };
-  const texts = [decision.sentence, ...told, ...decision.afterForest, forest.title, forest.reading];
+  const texts = [...before, decision.sentence, ...told, ...decision.afterForest, forest.title, forest.reading];
   const answers = decision.answers.map(({ question, answer }) => `${question} ${answer}`);
   const used = HEAD + FOOT + sum([...texts, ...answers].map((text) => lines(text, LETTERS_A_LINE) + 0.6));
   return { ...decision, paragraphs: told, reasons: [], forest: cut(forest, SHEET - used) };

@@ -35,7 +35,7 @@ describe.each(everyCase)("the printed report of the case %s", (name, inputs) => 
   it("has page one alone on one sheet", async () => {
     const page = (await renderReport(inputs)).extras().find((file) => file.name === "page-one.html")?.text ?? "";
     // poison in every name makes the sentences some thousand letters longer
-    expect((await printed(`${name} one`, page, "main")).sheets).toBe(name === "hostile" ? 3 : 1);
+    expect((await printed(`${name} one`, page, "main")).sheets).toBe(name.startsWith("hostile") ? 3 : 1);
   });
 });
 

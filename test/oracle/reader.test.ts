@@ -28,11 +28,14 @@ it("reads from the files of a random log what was written to them", () => {
 
 /** Units come in the order of their first row, which a shuffled file changes. */
 function sorted(result: ReturnType<typeof oracle>): ReturnType<typeof oracle> {
+  const byUnit = <Of extends { readonly unit: string }>(units: readonly Of[]): Of[] =>
+    [...units].sort((a, b) => (a.unit < b.unit ? -1 : 1));
   return {
     ...result,
     metrics: result.metrics.map((metric) => ({
       ...metric,
-      values: [...metric.values].sort((a, b) => (a.unit < b.unit ? -1 : 1)),
+      values: byUnit(metric.values),
+      since: metric.since === null ? null : { ...metric.since, units: byUnit(metric.since.units) },
     })),
   };
 }

@@ -46,7 +46,10 @@ function wrong(change: Partial<CellTable>): string[] {
     quantile: null,
     ledger: [],
   };
-  const cells = { metric: "Fare", of: { ...CELLS, ...change }, ratio: null, covariate: null } as unknown as MetricCells;
+  // 1, 2 and 4 are the first quarters of the doublings 0, 1 and 2.
+  const sizes = { variant: [0, 0, 0], sign: [1, 1, 1], quarter: [0, 4, 8], units: [1, 1, 1] };
+  const of = { ...CELLS, ...change };
+  const cells = { metric: "Fare", of, ratio: null, covariate: null, sizes } as unknown as MetricCells;
   return wrongSums(PLAN, oracle, cells);
 }
 

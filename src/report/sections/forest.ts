@@ -60,6 +60,11 @@ export interface NumbersRow {
 
 const MOST_ROWS_UNCUT = 8;
 
+/** Whether a picture of so many rows is printed on more than one sheet, cut between its rows. */
+export function isLong(rows: number): boolean {
+  return rows > MOST_ROWS_UNCUT;
+}
+
 const GROUPS: readonly Role[] = ["primary", "guardrail", "secondary"];
 
 export async function forestTable(effects: readonly Effect[], plan: Plan): Promise<ForestTable> {
@@ -104,7 +109,7 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
     zeroLine: await draw(forestStrip(null, axis), "forest-zero", null),
     axis: await draw(forestScale(axis, percentLabel), "forest-axis", axisText(axis)),
     anyDrawn: drawn.length > 0,
-    long: ordered.length > MOST_ROWS_UNCUT,
+    long: isLong(ordered.length),
     numberColumns: NUMBERS.map(([head]) => head),
     numbers: ordered.map((effect) => ({
       metric: effect.metric,

@@ -16,6 +16,7 @@ import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
 import { effectText, type Signed } from "../effect-text.ts";
 import { axisLabel, figures, scaleText } from "../figure-words.ts";
+import { isLong } from "./forest.ts";
 
 /** One effect by the levels of one column: a row a level, drawn where the measure decides, and the numbers in a table. */
 export interface SubgroupPart {
@@ -28,6 +29,8 @@ export interface SubgroupPart {
   readonly numbers: readonly { readonly level: string; readonly cells: readonly string[]; readonly stands: string }[];
 }
 export interface SubgroupFigure {
+  /** Printed on more than one sheet, cut between its rows. */
+  readonly long: boolean;
   readonly reading: string;
   readonly plotHead: string;
   readonly rows: readonly (Signed & {
@@ -111,6 +114,7 @@ async function figureOf(plan: Plan, effect: Effect, { levels }: Subgroup, id: st
   return {
     reading:
       "A row for each value on the row that enrolled: filled square, the difference among those with that value; hollow, too few to tell. The difference of the whole runs through all rows as a dotted line. Long upright: no difference.",
+    long: isLong(rows.length),
     plotHead,
     rows,
     axis:
