@@ -140,7 +140,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     severalMetrics: plan.metrics.length > 1,
     power: powerSection(plan, reduction, effects),
     methods,
-    consort: consortTable(plan, reduction, baseline !== null),
+    consort: consortTable(plan, reduction, baseline !== null, changes),
     units: [
       ...new Set(
         plan.metrics.flatMap(({ unitOfMeasure }) => (unitOfMeasure === null ? [] : [withoutControls(unitOfMeasure)])),

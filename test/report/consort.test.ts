@@ -3,6 +3,8 @@ import { renderReport } from "../../src/report/index.ts";
 import { adopt, little } from "./cases.ts";
 import { everyCase } from "./every.ts";
 import { sectionOf, textOf } from "./markup.ts";
+import { atALook } from "./meanwhile.ts";
+import { secondRun, thirdRun } from "./rerun-case.ts";
 
 /** CONSORT 2010, table 1 of Schulz, Altman and Moher, BMJ 340:c332: its 37 items with their letters. */
 const ITEMS_2010 =
@@ -61,6 +63,39 @@ describe("the table of CONSORT's items", () => {
       },
     };
     expect(await missing(empty)).toEqual(expect.arrayContaining(["5", "7a", "8a", "14b", "15", "23", "25", "5b"]));
+  });
+
+  const itemOf = async (item: string, inputs: typeof adopt) => {
+    const found = (await rowsOf(inputs)).find(({ cells }) => cells[1] === item);
+    return { link: /href="#([^"]*)"/.exec(found?.row ?? "")?.[1] ?? null, text: found?.cells[3] ?? "" };
+  };
+
+  it("leads to what changed on a rerun, with how much of the plan and of the rule", async () => {
+    expect((await itemOf("10", adopt)).link).toBe("plan");
+    expect(await itemOf("10", secondRun)).toEqual({
+      link: "changes",
+      text: "2 What changed: of the plan since the report before, 1 place; of the rule since the first run, none",
+    });
+    expect((await itemOf("10", thirdRun)).text).toMatch(/of the rule since the first run, \d+ places?$/);
+  });
+
+  it("states the registration where the rule was kept before the start", async () => {
+    const registered = { on: "2026-02-20", where: "the team\u2019s wiki", fingerprint: "ab12 cd34" };
+    const link = "https://ferry.example/plan";
+    const withPlan = (more: object) => ({ ...adopt, plan: { ...adopt.plan, ...more } });
+    const none = withPlan({ texts: { ...adopt.plan.texts, link: null } });
+    expect((await itemOf("2", none)).text).toBe("not stated");
+    const kept = withPlan({ registered, texts: { ...adopt.plan.texts, link } });
+    expect(await itemOf("2", kept)).toEqual({
+      link: "facts",
+      text: "7 From what: the rule, kept before the start: 2026-02-20, the team\u2019s wiki; link of the plan",
+    });
+    expect((await itemOf("10", kept)).text).toContain("whether its rule is the one that was kept before the start");
+  });
+
+  it("names the looks that were planned, or that there are none", async () => {
+    expect((await itemOf("16b", adopt)).text).toBe("7 Cautions: the plan names none");
+    expect((await itemOf("16b", atALook)).link).toBe("method-planned-looks");
   });
 });
 
