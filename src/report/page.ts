@@ -117,10 +117,11 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
     incidents: incidentTexts(inputs),
-    design: designSection(
-      plan,
-      effects.some(({ resampled }) => resampled !== null),
-    ),
+    design: designSection(plan, {
+      drawn: effects.some(({ resampled }) => resampled !== null),
+      accrual: inputs.accruals.some(({ days }) => days.length > 0),
+      daysSince: inputs.daysSince.length > 0,
+    }),
     counted: countedSection(plan, reduction),
     baseline,
     flow: await flowFigure(plan, reduction),

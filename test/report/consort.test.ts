@@ -2,8 +2,9 @@ import { describe, expect, it } from "vitest";
 import { renderReport } from "../../src/report/index.ts";
 import { adopt, little } from "./cases.ts";
 import { everyCase } from "./every.ts";
+import { grouped } from "./groups.ts";
 import { sectionOf, textOf } from "./markup.ts";
-import { atALook } from "./meanwhile.ts";
+import { atALook, meanwhile } from "./meanwhile.ts";
 import { secondRun, thirdRun } from "./rerun-case.ts";
 
 /** CONSORT 2010, table 1 of Schulz, Altman and Moher, BMJ 340:c332: its 37 items with their letters. */
@@ -113,5 +114,45 @@ describe("what was planned", () => {
     expect(planned).toContain("Every measure with its role");
     expect(added).toContain("Other reasonable choices");
     expect(planned.slice(planned.indexOf("Named in the plan"))).not.toContain("Other reasonable choices");
+  });
+
+  const unplannedOf = async (inputs: typeof adopt) => {
+    const html = sectionOf((await renderReport(inputs)).html, "methods");
+    return html.slice(html.indexOf('id="unplanned"'), html.indexOf('id="computed"'));
+  };
+  const [BESIDE, APART] = ["Not named in the plan;", "Asked afterwards, not planned"] as const;
+
+  it("names subgroups, looks and incidents among what was planned", async () => {
+    const plan = { ...grouped.plan, subgroups: ["country", "platform"] };
+    const [planned = ""] = textOf(await unplannedOf({ ...grouped, plan })).split(BESIDE);
+    expect(planned).toContain("by \u201ccountry\u201d and \u201cplatform\u201d at enrolment");
+    expect(textOf(await unplannedOf(atALook)).split(BESIDE)[0]).toMatch(
+      /Looks, at [\d%, and]+ of the planned size: this is look \d,/,
+    );
+    const [happened = ""] = textOf(await unplannedOf(meanwhile)).split(BESIDE);
+    expect(happened).toContain("at the end of section 3: \u201cpayment outage\u201d and \u201cstrike\u201d");
+    const [alone = ""] = textOf(await unplannedOf(adopt)).split(BESIDE);
+    expect(alone).not.toMatch(/Subgroups|Looks|meanwhile/);
+  });
+
+  it("names how the difference came about among what every report adds, where the report has it", async () => {
+    const added = async (inputs: typeof adopt) => textOf(await unplannedOf(inputs)).split(BESIDE)[1] ?? "";
+    expect(await added(grouped)).toContain(
+      "How each difference came about: as visitors enrolled (with a band that holds on all days) and by day since enrolment.",
+    );
+    expect(await added(adopt)).not.toContain("came about");
+  });
+
+  it("keeps what was asked afterwards apart, with a link to it", async () => {
+    const metric = adopt.plan.metrics[2];
+    if (metric === undefined) throw new Error("the plan has three measures");
+    const askedAfterwards = { subgroups: ["platform"], metrics: [metric], columns: [], numericColumns: [] };
+    const html = await unplannedOf({ ...grouped, plan: { ...grouped.plan, askedAfterwards } });
+    const [before = "", apart = ""] = html.split(`<a href="#afterwards">${APART}</a>`);
+    expect(textOf(apart)).toMatch(
+      /^: \u201cFare per visitor\u201d and subgroups by \u201cplatform\u201d\. None of it decides/,
+    );
+    expect(textOf(before)).not.toContain("platform");
+    expect(await unplannedOf(adopt)).not.toContain(APART);
   });
 });
