@@ -20,8 +20,10 @@ export function figureFiles(page: Page): FigureFile[] {
     file("flow", flowSheet(flow)),
     ...metrics.flatMap(({ distribution, sampling, accrual, days, subgroups, choices }) => [
       ...(distribution === null ? [] : [file(distribution.id, distributionSheet(distribution))]),
-      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [file(id, drawnSheet(figure))])),
-      ...[...accrual, ...days].flatMap(({ id, drawing }) => (drawing === null ? [] : [file(id, drawnSheet(drawing))])),
+      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [file(id, drawnSheet(figure, 280))])),
+      ...[...accrual, ...days].flatMap(({ id, drawing }) =>
+        drawing === null ? [] : [file(id, drawnSheet(drawing, 240))],
+      ),
       ...subgroups.flatMap(subgroupFile),
       ...choices
         .filter(({ axis }) => axis !== null)
@@ -103,12 +105,14 @@ function subgroupFile({ id, title, figure }: SubgroupPart): FigureFile[] {
   return [file(id, rowsSheet({ title: `${title}: ${plotHead}`, reading, rows, axis }, LEVEL_COLUMNS))];
 }
 
+type Drawn = Pick<SamplingFigure, "caption" | "reading" | "drawing">;
+
 /** One drawing with its caption. */
-function drawnSheet({ caption, reading, drawing }: Pick<SamplingFigure, "caption" | "reading" | "drawing">): Sheet {
+function drawnSheet({ caption, reading, drawing }: Drawn, height: number): Sheet {
   return {
     title: caption,
     note: reading,
-    rows: [{ height: 280, texts: [], drawings: [{ drawing, x: 0, width: 340, cut: false }] }],
+    rows: [{ height, texts: [], drawings: [{ drawing, x: 0, width: 340, cut: false }] }],
   };
 }
 
