@@ -91,6 +91,11 @@ describe("the table of CONSORT's items", () => {
       link: "facts",
       text: "7 From what: the rule, kept before the start: 2026-02-20, the team\u2019s wiki; link of the plan",
     });
+    const alone = withPlan({ registered, texts: { ...adopt.plan.texts, link: null } });
+    expect(await itemOf("2", alone)).toEqual({
+      link: "facts",
+      text: "7 From what: the rule, kept before the start: 2026-02-20, the team\u2019s wiki",
+    });
     expect((await itemOf("10", kept)).text).toContain("whether its rule is the one that was kept before the start");
   });
 
