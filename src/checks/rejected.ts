@@ -1,6 +1,6 @@
 import type { Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
-import { count, list, percent, plural } from "../words/index.ts";
+import { count, list, percent, plural, rejectReason } from "../words/index.ts";
 import { armsAlike } from "./arms.ts";
 import { asCheck, type Finding, passed } from "./finding.ts";
 import { rowsOn } from "./ledger.ts";
@@ -19,25 +19,25 @@ const REASONS_NAMED = 3;
 export function rejected(plan: Plan, reduction: Reduction): Check | null {
   if (reduction.rowsRead === 0) return null;
   const arms = byArm(plan, reduction);
-  const whole = ofRows(reduction);
+  const whole = ofRows(plan, reduction);
   return asCheck("rejected", [whole, ...(arms === null ? [] : [arms])], whole.figures);
 }
 
 /** The same for all variants together, before the end: a variant that makes people do more has more rows to be rejected. */
-export function rejectedTogether(_plan: Plan, reduction: Reduction): Check | null {
+export function rejectedTogether(plan: Plan, reduction: Reduction): Check | null {
   if (reduction.rowsRead === 0) return null;
-  const whole = ofRows(reduction, "check-rejects.csv");
+  const whole = ofRows(plan, reduction, "check-rejects.csv");
   return asCheck("rejected", [whole], whole.figures);
 }
 
-function ofRows(reduction: Reduction, listedIn = "rejects.csv"): Finding {
+function ofRows({ unitCalled }: Plan, reduction: Reduction, listedIn = "rejects.csv"): Finding {
   const rows = rowsOn(reduction, "rejected");
   const share = rows / reduction.rowsRead;
   const figures = { rows, share };
   if (rows === 0) return passed("rows", `All ${count(reduction.rowsRead)} rows could be read.`, figures);
   const reasons = reduction.rejectReasons
     .slice(0, REASONS_NAMED)
-    .map(({ reason, rows: n }) => `${reason} (${plural(n, "row", "rows")})`);
+    .map(({ reason, rows: n }) => `${rejectReason(reason, unitCalled)} (${plural(n, "row", "rows")})`);
   const why = reasons.length === 0 ? "" : `, most often: ${list(reasons)}`;
   const sentence = `${plural(rows, "row", "rows")} of ${count(reduction.rowsRead)} (${percent(share)}) could not be used${why}.`;
   const result = OUTCOME[byShare(share)];

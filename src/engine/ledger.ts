@@ -1,4 +1,5 @@
 import type { Plan } from "../plan/index.ts";
+import { NO_UNIT } from "../words/index.ts";
 import { count, type Engine, type Row, text, wholeOrNull } from "./engine.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import {
@@ -94,7 +95,7 @@ export function reasonText(reason: number, layout: Layout): string {
   if (reason === REASON.notText) return "cannot be read: not UTF-8";
   if (reason === REASON.notObject) return "cannot be read: not a JSON object";
   if (reason === REASON.tooLong) return "cannot be read: longer than 4 MB";
-  if (reason === REASON.noUnit) return "no unit";
+  if (reason === REASON.noUnit) return NO_UNIT;
   if (reason === REASON.noTime) return "no readable time";
   const isRange = reason >= REASON.outOfRange;
   const column = layout.columns[reason - (isRange ? REASON.outOfRange : REASON.notNumber)];

@@ -117,10 +117,11 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
     incidents: incidentTexts(inputs),
-    design: designSection(
-      plan,
-      effects.some(({ resampled }) => resampled !== null),
-    ),
+    design: designSection(plan, {
+      drawn: effects.some(({ resampled }) => resampled !== null),
+      accrual: inputs.accruals.some(({ days }) => days.length > 0),
+      daysSince: inputs.daysSince.length > 0,
+    }),
     counted: countedSection(plan, reduction),
     baseline,
     flow: await flowFigure(plan, reduction),
@@ -140,7 +141,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     severalMetrics: plan.metrics.length > 1,
     power: powerSection(plan, reduction, effects),
     methods,
-    consort: consortTable(plan, reduction, baseline !== null),
+    consort: consortTable(plan, reduction, baseline !== null, changes),
     units: [
       ...new Set(
         plan.metrics.flatMap(({ unitOfMeasure }) => (unitOfMeasure === null ? [] : [withoutControls(unitOfMeasure)])),

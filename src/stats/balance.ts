@@ -68,3 +68,27 @@ const NOMINAL = 0.05;
 function spreadless({ n, smallest, largest }: PowerSums): number | null {
   return n >= 2 && smallest === largest ? 0 : null;
 }
+
+/**
+ * Standardised difference of two shares, each unit's value 0 or 1:
+ *   (p_t - p_c) / sqrt((s_t^2 + s_c^2) / 2),   s^2 = n p (1 - p) / (n - 1)
+ * the same as `balance` finds from the values. Null with fewer than two units in an arm, or where neither arm varies.
+ *
+ * Source: Austin 2009, Statistics in Medicine 28, 3083-3107, eq. 2, with s^2 of a sample as in eq. 1.
+ */
+export function standardisedShares(control: Counted, variant: Counted): number | null {
+  const [c, t] = [varianceOfShare(control), varianceOfShare(variant)];
+  if (c === null || t === null || c + t === 0) return null;
+  return (variant.units / variant.of - control.units / control.of) / Math.sqrt((c + t) / 2);
+}
+export interface Counted {
+  readonly units: number;
+  /** Of how many. */
+  readonly of: number;
+}
+
+function varianceOfShare({ units, of }: Counted): number | null {
+  if (of < 2) return null;
+  const share = units / of;
+  return (of * share * (1 - share)) / (of - 1);
+}

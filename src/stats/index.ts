@@ -8,7 +8,7 @@ export { armOfLevel, shapedAs } from "./arm-of-level.ts";
 // Normal approximation
 export { armsAlike } from "./arms-alike.ts";
 // Covariates
-export { type Balance, balance } from "./balance.ts";
+export { type Balance, balance, type Counted, standardisedShares } from "./balance.ts";
 // Time and subgroups
 export { type BandFor, bandCritical } from "./band.ts";
 // More than one question

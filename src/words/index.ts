@@ -26,3 +26,4 @@ export { alike, count, fixed, MINUS, number, plain, signed } from "./number.ts";
 export { percent, planPercent, signedPercent } from "./percent.ts";
 export { percentile } from "./percentile.ts";
 export { type Rates, rates } from "./rate.ts";
+export { NO_UNIT, rejectReason } from "./reasons.ts";

@@ -69,7 +69,7 @@ describe("rejected rows", () => {
       reductionOf(plan, {
         rows: { rejected: 101 },
         rejectReasons: [
-          { reason: "no visitor", rows: 100 },
+          { reason: "no unit", rows: 100 }, // what the plan calls a visitor
           { reason: "no readable time", rows: 1 },
         ],
       }),

@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { loadPlan } from "../../src/plan/index.ts";
 import { baselineTable, largest } from "../../src/report/sections/baseline.ts";
+import { consortTable } from "../../src/report/sections/consort.ts";
 import { reduced } from "../engine/small.ts";
 
 const PLAN = (more: string) => `experiment: Small
@@ -42,6 +43,35 @@ describe("the groups before enrolment", () => {
         standardised: "0.420",
       },
     ]);
+  });
+
+  it("are shown by the values of each subgroup, as shares of the enrolled, with subgroups alone", async () => {
+    const plan = `${PLAN("")}subgroups: [country]\nfilters: [{name: staff, drop: units, when: ever, where: {staff: yes}}]\n`;
+    const loaded = loadPlan(plan);
+    if (!("plan" in loaded)) throw new Error("the plan of the test is wrong");
+    const rows = ["a,NO", "b,NO", "c,SE", "d,"].map((row) => `${row},s,list,1,`);
+    const others = ["e,NO", "f,SE", "g,SE"].map((row) => `${row},s,calendar,1,`);
+    const log = ["visitor,country,event,arm,fare,staff", ...rows, ...others, "h,SE,s,calendar,1,yes", ""].join("\n");
+    const { reduction, units } = await reduced(plan, { "log.csv": log });
+    expect(units["filter:staff"]).toBe(1); // enrolled all the same
+    const table = baselineTable(loaded.plan, reduction);
+    // by hand: SE 1 of 4 and 3 of 4, variances 1/4 and 1/4, 0.5 / 0.5; NO 2 and 1 of 4, 1/3 and 1/4, -0.25 / sqrt(7/24);
+    // no value 1 and 0 of 4, 1/4 and 0, -0.25 / sqrt(1/8)
+    expect(table?.rows.map(({ what, standardised }) => [what, standardised])).toEqual([
+      ['"country" at enrolment: SE', "1.000"],
+      ['"country" at enrolment: NO', "\u22120.463"],
+      ['"country" at enrolment: no value', "\u22120.707"],
+    ]);
+    expect(table?.rows[0]?.cells).toEqual([
+      { figure: "25.0%", beside: "1 visitor" },
+      { figure: "75.0%", beside: "3 visitors" },
+    ]);
+    expect(table?.reading).toContain("share of all visitors enrolled");
+    expect(table?.reading).not.toContain("Mean with");
+    const [item] = consortTable(loaded.plan, reduction, table !== null, null).rows.filter(
+      (row) => row.item2010 === "15",
+    );
+    expect(item?.place?.id).toBe("before");
   });
 
   it("are not shown where the plan names nothing that was known of them", async () => {

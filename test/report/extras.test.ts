@@ -8,6 +8,7 @@ import { cssText } from "../../src/report/render.ts";
 import type { ExtraFile } from "../../src/report/types.ts";
 import { adopt, notSettled, several, undecidable } from "./cases.ts";
 import { everyCase } from "./every.ts";
+import { grouped } from "./groups.ts";
 import { tagsOf, textOf } from "./markup.ts";
 
 async function extrasOf(inputs: typeof adopt): Promise<Map<string, string>> {
@@ -52,6 +53,28 @@ describe.each(everyCase)("what --figures adds to the report of the case %s", asy
     const links = tags.flatMap(({ attributes }) => attributes.get("href") ?? []);
     expect(links.filter((href) => !ids.includes(href.slice(1)))).toEqual([]);
     expect(tags.some(({ name }) => name === "script" || name === "details")).toBe(false);
+  });
+});
+
+describe("the figures of days and subgroups", async () => {
+  const files = await extrasOf(grouped);
+
+  it("are those that the report draws: of what decides, and of what was asked afterwards", () => {
+    const own = [...files.keys()].filter((name) => /accrual|days|subgroup|afterwards/.test(name));
+    // "Fare per visitor" is for information, "Support contacts" is shown on no day
+    expect(own.sort()).toEqual(["accrual-1", "afterwards-1", "days-1", "subgroup-1"].map((id) => `figures/${id}.svg`));
+  });
+
+  it("have the report's words", async () => {
+    const text = textOf((await renderReport(grouped)).html);
+    for (const name of ["accrual-1", "days-1", "afterwards-1", "subgroup-1"]) {
+      const svg = textOf(get(files, `figures/${name}.svg`));
+      const [first = ""] = /^.*?(?=\.|, as |, by |: )/.exec(svg.trim()) ?? [];
+      expect(first).not.toBe("");
+      expect(text).toContain(first);
+    }
+    expect(textOf(get(files, "figures/subgroup-1.svg"))).toContain("Does not point against the whole.");
+    expect(textOf(get(files, "figures/days-1.svg"))).toContain("days since enrolment");
   });
 });
 
@@ -140,6 +163,12 @@ describe("the files of an earlier run", () => {
 
   it("go with their folder where nothing else lies in it", async () => {
     await keepExtras(folder, files);
+    await keepExtras(folder, []);
+    expect(await readdir(folder)).toEqual([]);
+  });
+
+  it.each(everyCase)("go whatever figure they are (%s)", async (_, inputs) => {
+    await keepExtras(folder, (await renderReport(inputs)).extras());
     await keepExtras(folder, []);
     expect(await readdir(folder)).toEqual([]);
   });

@@ -230,3 +230,16 @@ describe("our own words, in every file and on the terminal,", () => {
     for (const text of texts) expect(FORBIDDEN.exec(text)?.[0]).toBeUndefined();
   });
 });
+
+describe("why rows were rejected", () => {
+  it("calls a unit what the plan calls it on the page, whatever the files call it", async () => {
+    const rejectReasons = [
+      { reason: "no unit", rows: 1_204 },
+      { reason: "not a number: fare", rows: 11 },
+    ];
+    const { html } = await renderReport({ ...adopt, reduction: { ...adopt.reduction, rejectReasons } });
+    const section = textOf(sectionOf(html, "counted"));
+    expect(section).toMatch(/1,204: no visitor\s+11: not a number: fare/);
+    expect(section).not.toContain("no unit");
+  });
+});

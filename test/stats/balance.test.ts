@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { balance } from "../../src/stats/index.ts";
+import { balance, standardisedShares } from "../../src/stats/index.ts";
 import { sumsTogether } from "./arms.ts";
 import { present } from "./expect.ts";
 
@@ -48,5 +48,25 @@ describe("the balance of a skewed covariate", () => {
 
   it("has no p without spread", () => {
     expect(balanceOf([1, 1, 1], [1, 1]).p).toBeNull();
+  });
+});
+
+describe("the standardised difference of shares", () => {
+  it("is that of the values, each 0 or 1", () => {
+    const ones = (units: number, of: number) => Array.from({ length: of }, (_, i) => (i < units ? 1 : 0));
+    for (const [c, t] of [
+      [3, 9],
+      [12, 2],
+      [0, 4],
+    ] as const) {
+      const found = standardisedShares({ units: c, of: 12 }, { units: t, of: 10 });
+      expect(found).toBeCloseTo(balanceOf(ones(c, 12), ones(t, 10)).standardised ?? Number.NaN, 12);
+    }
+  });
+
+  it("does not exist without two units in each arm, or where nothing varies", () => {
+    expect(standardisedShares({ units: 1, of: 1 }, { units: 3, of: 9 })).toBeNull();
+    expect(standardisedShares({ units: 0, of: 0 }, { units: 3, of: 9 })).toBeNull();
+    expect(standardisedShares({ units: 5, of: 5 }, { units: 9, of: 9 })).toBeNull();
   });
 });

@@ -4,6 +4,7 @@ import type { DistributionFigure } from "../sections/distribution.ts";
 import type { FlowFigure, FlowStep } from "../sections/flow.ts";
 import type { ForestTable } from "../sections/forest.ts";
 import type { SamplingFigure } from "../sections/sampling.ts";
+import type { SubgroupPart } from "../sections/subgroups.ts";
 import { type Sheet, type SheetRow, sheetSvg } from "./sheet.ts";
 
 export interface FigureFile {
@@ -13,15 +14,22 @@ export interface FigureFile {
 
 /** Every figure of the page as a file of its own, from the same drawings and words. */
 export function figureFiles(page: Page): FigureFile[] {
-  const { decision, flow, metrics } = page;
+  const { decision, flow, metrics, afterwards } = page;
   return [
     ...(decision.forest === null ? [] : [file("forest", forestSheet(decision.forest))]),
     file("flow", flowSheet(flow)),
-    ...metrics.flatMap(({ distribution, sampling, choices }) => [
+    ...metrics.flatMap(({ distribution, sampling, accrual, days, subgroups, choices }) => [
       ...(distribution === null ? [] : [file(distribution.id, distributionSheet(distribution))]),
-      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [file(id, samplingSheet(figure))])),
-      ...choices.filter(({ axis }) => axis !== null).map((figure) => file(figure.id, choicesSheet(figure))),
+      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [file(id, drawnSheet(figure, 280))])),
+      ...[...accrual, ...days].flatMap(({ id, drawing }) =>
+        drawing === null ? [] : [file(id, drawnSheet(drawing, 240))],
+      ),
+      ...subgroups.flatMap(subgroupFile),
+      ...choices
+        .filter(({ axis }) => axis !== null)
+        .map((figure) => file(figure.id, rowsSheet(figure, CHOICE_COLUMNS))),
     ]),
+    ...(afterwards?.subgroups ?? []).flatMap(subgroupFile),
   ];
 }
 
@@ -58,30 +66,53 @@ function forestSheet(forest: ForestTable): Sheet {
   return { title: forest.title, note: forest.reading, rows: [...rows, ...axis] };
 }
 
-function choicesSheet({ title, reading, rows, axis }: ChoicesFigure): Sheet {
+type RowsFigure = Pick<ChoicesFigure, "title" | "reading" | "rows" | "axis">;
+/** Where the columns of a sheet of rows begin, and how many characters the first and the last have room for. */
+interface Columns {
+  readonly plot: number;
+  readonly figures: number;
+  readonly stands: number;
+  readonly room: readonly [name: number, stands: number];
+}
+const CHOICE_COLUMNS: Columns = { plot: PLOT, figures: FIGURES, stands: ASKED, room: [NAME_ROOM, ASKED_ROOM] };
+/** Values of a column are short, what is said of them is not. */
+const LEVEL_COLUMNS: Columns = { plot: 170, figures: 490, stands: 690, room: [25, 42] };
+
+function rowsSheet({ title, reading, rows, axis }: RowsFigure, columns: Columns): Sheet {
+  const { plot, figures, stands, room } = columns;
   const lines = rows.map(
     (row): SheetRow => ({
       height: 26,
       texts: [
-        { x: NAME, text: row.choice, room: NAME_ROOM, look: row.isPlanned ? "strong" : "plain" },
-        { x: FIGURES, text: `${row.estimate} ${row.interval}`.trimEnd(), room: FIGURES_ROOM },
-        { x: ASKED, text: row.stands, look: "quiet", room: ASKED_ROOM },
+        { x: NAME, text: row.choice, room: room[0], look: row.isPlanned ? "strong" : "plain" },
+        { x: figures, text: `${row.estimate} ${row.interval}`.trim(), room: FIGURES_ROOM },
+        { x: stands, text: row.stands, look: "quiet", room: room[1] },
       ],
-      drawings: row.drawing === null ? [] : [{ drawing: row.drawing, x: PLOT, width: PLOT_WIDTH, cut: true }],
+      drawings: row.drawing === null ? [] : [{ drawing: row.drawing, x: plot, width: PLOT_WIDTH, cut: true }],
     }),
   );
   const last: SheetRow[] =
     axis === null
       ? []
-      : [{ height: 26, texts: [], drawings: [{ drawing: axis, x: PLOT, width: PLOT_WIDTH, cut: false }] }];
+      : [{ height: 26, texts: [], drawings: [{ drawing: axis, x: plot, width: PLOT_WIDTH, cut: false }] }];
   return { title, note: reading, rows: [...lines, ...last] };
 }
 
-function samplingSheet({ caption, reading, drawing }: SamplingFigure): Sheet {
+function subgroupFile({ id, title, figure }: SubgroupPart): FigureFile[] {
+  if (figure === null) return [];
+  const rows = figure.rows.map(({ level, ...row }) => ({ ...row, choice: level, isPlanned: false }));
+  const { reading, axis, plotHead } = figure;
+  return [file(id, rowsSheet({ title: `${title}: ${plotHead}`, reading, rows, axis }, LEVEL_COLUMNS))];
+}
+
+type Drawn = Pick<SamplingFigure, "caption" | "reading" | "drawing">;
+
+/** One drawing with its caption. */
+function drawnSheet({ caption, reading, drawing }: Drawn, height: number): Sheet {
   return {
     title: caption,
     note: reading,
-    rows: [{ height: 280, texts: [], drawings: [{ drawing, x: 0, width: 340, cut: false }] }],
+    rows: [{ height, texts: [], drawings: [{ drawing, x: 0, width: 340, cut: false }] }],
   };
 }
 

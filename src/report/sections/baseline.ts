@@ -1,14 +1,15 @@
 import { covariates } from "../../checks/index.ts";
-import type { Reduction } from "../../engine/types.ts";
+import { levelText } from "../../decision/index.ts";
+import type { Reduction, SubgroupColumn } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import type { ArmFigures } from "../../stats/index.ts";
-import { balance } from "../../stats/index.ts";
-import { capital, count, fixed, percent } from "../../words/index.ts";
+import { balance, standardisedShares } from "../../stats/index.ts";
+import { capital, count, fixed, percent, plural, quoted } from "../../words/index.ts";
 import { NONE, sideBySide } from "../effect-text.ts";
 
 /**
- * The arms side by side before enrolment (CONSORT 2010 item 15, 2025 item 25). One row a quantity; a row of another kind,
- * such as a level's share of each arm, is one more `BaselineRow`.
+ * The arms side by side before enrolment (CONSORT 2010 item 15, 2025 item 25): one row a quantity, then one a level of each
+ * column of subgroups.
  */
 export interface BaselineTable {
   readonly variants: readonly string[];
@@ -30,14 +31,45 @@ export interface BaselineCell {
 
 /** Null where the plan names nothing that was known before enrolment. */
 export function baselineTable(plan: Plan, reduction: Reduction): BaselineTable | null {
-  const rows = covariateRows(plan, reduction);
-  if (rows.length === 0) return null;
+  const known = covariateRows(plan, reduction);
+  const levels = reduction.facts.subgroups.flatMap((column) => levelRows(plan, column));
+  if (known.length + levels.length === 0) return null;
   const { many } = plan.unitCalled;
+  const readings = [
+    ...(known.length === 0
+      ? []
+      : [`Mean with its standard deviation, or share, over the ${many} counted that have a value.`]),
+    ...(levels.length === 0
+      ? []
+      : [`Of a value at enrolment: the share of all ${many} enrolled with that variant, counted or not.`]),
+    "Standardised difference: over the standard deviation of both groups, so that it does not grow with their size; beyond 0.1 it is worth a look. Whether chance explains a difference is judged in section 3.",
+  ];
   return {
     variants: plan.variants.map(({ name }) => name),
-    rows,
-    reading: `Mean with its standard deviation, or share, over the ${many} counted that have a value. Standardised difference: over the standard deviation of both groups, so that it does not grow with their size; beyond 0.1 it is worth a look. Whether chance explains a difference is judged in section 3.`,
+    rows: [...known, ...levels],
+    reading: readings.join(" "),
   };
+}
+
+/** The cells of a level's effect hold the counted alone; randomisation made those who are enrolled alike. */
+function levelRows(plan: Plan, { column, levels }: SubgroupColumn): BaselineRow[] {
+  const control = plan.variants.findIndex(({ isControl }) => isControl);
+  const { one, many } = plan.unitCalled;
+  const all = plan.variants.map((_, v) => levels.reduce((sum, { enrolled }) => sum + (enrolled[v] ?? 0), 0));
+  return levels.map(({ level, enrolled }) => {
+    const arms = all.map((of, v) => ({ units: enrolled[v] ?? 0, of }));
+    const own = arms[control];
+    return {
+      what: `${quoted(column)} at enrolment: ${levelText(level)}`,
+      cells: arms.map(({ units, of }) => ({
+        figure: of === 0 ? NONE : percent(units / of),
+        beside: plural(units, one, many),
+      })),
+      standardised: largest(
+        arms.filter((_, v) => v !== control).map((arm) => (own === undefined ? null : standardisedShares(own, arm))),
+      ),
+    };
+  });
 }
 
 function covariateRows(plan: Plan, reduction: Reduction): BaselineRow[] {

@@ -1,5 +1,7 @@
 import type { Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
+import { plural } from "../../words/index.ts";
+import type { ChangesJson } from "../changes/types.ts";
 import { NOT_STATED } from "./design.ts";
 
 /**
@@ -28,6 +30,7 @@ export interface Place {
 const AT = {
   head: { id: "decision", text: "head of the page" },
   decision: { id: "decision", text: "1 Decision" },
+  changes: { id: "changes", text: "2 What changed" },
   trust: { id: "trust", text: "3 Can the data be trusted?" },
   design: { id: "design", text: "4 What was planned" },
   flow: { id: "flow", text: "4 The flow" },
@@ -53,8 +56,16 @@ type Row = readonly [
   missing?: string,
 ];
 
-/** @param hasBaseline whether the report has a table of the groups before enrolment */
-export function consortTable(plan: Plan, { facts }: Reduction, hasBaseline: boolean): ConsortTable {
+/**
+ * @param hasBaseline whether the report has a table of the groups before enrolment
+ * @param changes of a rerun; null in a first report, which has no section 2
+ */
+export function consortTable(
+  plan: Plan,
+  { facts }: Reduction,
+  hasBaseline: boolean,
+  changes: Pick<ChangesJson, "plan" | "rule"> | null,
+): ConsortTable {
   const { texts, variants, filters } = plan;
   const stated = (value: unknown, place: Place): Place | null =>
     value === null || value === undefined || value === "" ? null : place;
@@ -67,13 +78,7 @@ export function consortTable(plan: Plan, { facts }: Reduction, hasBaseline: bool
     ["2a", "6", "Background and reason", stated(texts.notes, AT.facts), "notes of the plan"],
     ["2b", "7", "Question", AT.head],
     ["3a", "9", "Design: groups side by side, planned shares, what must be shown", AT.design],
-    [
-      "3b, 6b",
-      "10",
-      "Changes after the start",
-      AT.plan,
-      "this report knows one plan; its fingerprint stands in 7 From what",
-    ],
+    ["3b, 6b", "10", "Changes after the start", ...changesAfterStart(plan, changes)],
     ["4a", "12a", "Who could be enrolled", AT.design],
     ["4b", "11", "Where the data come from", AT.facts, "files of the log"],
     ["5", "13", "What each group was given", stated(described, AT.design)],
@@ -114,7 +119,7 @@ export function consortTable(plan: Plan, { facts }: Reduction, hasBaseline: bool
       "not answered by this test; cautions in section 7",
     ],
     ["22", "29", "What it means, gains and harms together", AT.decision],
-    ["23", "2", "Registration", stated(texts.link, AT.facts), "link of the plan"],
+    ["23", "2", "Registration", stated(plan.registered ?? texts.link, AT.facts), registration(plan)],
     ["24", "3", "Where the plan is", AT.plan],
     ["", "4", "Data and code", AT.facts, "fingerprints of every file; the report gives no row away"],
     ["25", "5a", "Who paid and who owns it", stated(texts.owner, AT.facts), "owner"],
@@ -131,4 +136,27 @@ export function consortTable(plan: Plan, { facts }: Reduction, hasBaseline: bool
     leftOut:
       "Left out, since an online experiment has none of it: involvement of patients, sites and those who deliver care, and care besides (2025: 8, 12b, 24b).",
   };
+}
+
+function changesAfterStart(
+  { registered }: Plan,
+  changes: Pick<ChangesJson, "plan" | "rule"> | null,
+): [place: Place, note: string] {
+  if (changes === null) {
+    return registered === null
+      ? [AT.plan, "this report knows one plan; its fingerprint stands in 7 From what"]
+      : [AT.facts, "this report knows one plan, and whether its rule is the one that was kept before the start"];
+  }
+  const places = (found: readonly unknown[]) => (found.length === 0 ? "none" : plural(found.length, "place", "places"));
+  return [
+    AT.changes,
+    `of the plan since the report before, ${places(changes.plan)}; of the rule since the first run, ${places(changes.rule)}`,
+  ];
+}
+
+function registration({ registered, texts }: Plan): string {
+  const link = texts.link === null || texts.link === "" ? [] : ["link of the plan"];
+  if (registered === null) return link.join("");
+  const where = registered.where === null ? "" : `, ${registered.where}`;
+  return [`the rule, kept before the start: ${registered.on}${where}`, ...link].join("; ");
 }

@@ -1,6 +1,6 @@
 import type { ByVariant, MetricLedger, Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
-import { count, exact, percent, plural, quoted } from "../../words/index.ts";
+import { count, exact, percent, plural, quoted, rejectReason } from "../../words/index.ts";
 import { NONE } from "../effect-text.ts";
 import { rowLine, unitLine } from "../ledger.ts";
 
@@ -55,7 +55,10 @@ export function countedSection(
     })),
     rowsRead: count(reduction.rowsRead),
     metrics: reduction.metricLedgers.map((ledger) => metricRows(plan, ledger)),
-    rejectReasons: reduction.rejectReasons.map(({ reason, rows }) => ({ reason, rows: count(rows) })),
+    rejectReasons: reduction.rejectReasons.map(({ reason, rows }) => ({
+      reason: rejectReason(reason, plan.unitCalled),
+      rows: count(rows),
+    })),
     rejectsFile,
     filters: plan.filters.map(({ name, why }) => ({ name, why: why ?? "the plan gives no reason" })),
   };

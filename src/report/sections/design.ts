@@ -1,5 +1,5 @@
 import type { Plan } from "../../plan/types.ts";
-import { capital, count, list, plain, planPercent, plural } from "../../words/index.ts";
+import { capital, count, list, plain, planPercent, plural, quoted } from "../../words/index.ts";
 
 /** What the plan laid down before the start: who could be enrolled, what the groups were given, and how it is judged. */
 export interface DesignSection {
@@ -9,6 +9,15 @@ export interface DesignSection {
   /** CONSORT keeps the two apart: what the plan names, and what every report of this tool adds. */
   readonly planned: readonly string[];
   readonly added: readonly string[];
+  /** What was asked after the test began; null where nothing was. */
+  readonly afterwards: string | null;
+}
+/** Which of the parts that not every report has stand in this one. */
+export interface Shown {
+  /** Draws from the groups' own values. */
+  readonly drawn: boolean;
+  readonly accrual: boolean;
+  readonly daysSince: boolean;
 }
 export interface DesignVariant {
   readonly name: string;
@@ -24,8 +33,7 @@ export interface Fact {
 /** What the plan does not say, wherever the report has a place for it. */
 export const NOT_STATED = "not stated";
 
-/** @param drawn whether draws from the groups' own values stand in the report */
-export function designSection(plan: Plan, drawn: boolean): DesignSection {
+export function designSection(plan: Plan, shown: Shown): DesignSection {
   const parts = plan.variants.reduce((sum, { allocation }) => sum + allocation, 0);
   return {
     variants: plan.variants.map(({ name, what, isControl, allocation }) => ({
@@ -37,7 +45,8 @@ export function designSection(plan: Plan, drawn: boolean): DesignSection {
     facts: facts(plan),
     rule: rule(plan),
     planned: planned(plan),
-    added: added(plan, drawn),
+    added: added(plan, shown),
+    afterwards: afterwards(plan),
   };
 }
 
@@ -116,17 +125,43 @@ function planned(plan: Plan): string[] {
     "Every measure with its role, and the rule above: section 1 and the tables of section 5.",
     ...(adjusted.length === 0 ? [] : [`Adjusted for what was known before enrolment: ${list(adjusted)}.`]),
     ...(capped.length === 0 ? [] : [`Values cut at a cap: ${list(capped)}.`]),
-    ...(plan.filters.length === 0 ? [] : [`Filters: ${list(plan.filters.map(({ name }) => `"${name}"`))}.`]),
+    ...(plan.filters.length === 0 ? [] : [`Filters: ${list(plan.filters.map(({ name }) => quoted(name)))}.`]),
+    ...(plan.subgroups.length === 0
+      ? []
+      : [`Subgroups, under each measure: by ${list(plan.subgroups.map(quoted))} at enrolment; they never decide.`]),
+    ...(plan.looks === null
+      ? []
+      : [
+          `Looks, at ${list(plan.looks.planned.map(planPercent))} of the planned size: this is look ${plan.looks.at}, and what decides allows for all of them.`,
+        ]),
+    ...(plan.incidents.length === 0
+      ? []
+      : [
+          `What happened meanwhile, at the end of section 3: ${list(plan.incidents.map(({ name }) => quoted(name)))}. It is known only once it happened, and leaves nobody out of what decides.`,
+        ]),
   ];
 }
 
-function added({ unitCalled: { many } }: Plan, drawn: boolean): string[] {
+function added({ unitCalled: { many } }: Plan, { drawn, accrual, daysSince }: Shown): string[] {
+  const course = [
+    ...(accrual ? [`as ${many} enrolled (with a band that holds on all days)`] : []),
+    ...(daysSince ? ["by day since enrolment"] : []),
+  ];
   return [
     "The soundness checks of section 3: they judge the data and know no effect.",
     "Other reasonable choices: they show how much hangs on a choice, and never take the place of the plan\u2019s own.",
     drawn
       ? `How near the normal curve, with intervals from draws and by other methods, and how the ${many}\u2019 values lie.`
       : `How the ${many}\u2019 values lie, and intervals by other methods where they stand beside.`,
+    ...(course.length === 0 ? [] : [`How each difference came about: ${list(course)}.`]),
     "What would turn the result, power and sizes.",
   ];
+}
+
+function afterwards({ askedAfterwards: { metrics, subgroups } }: Plan): string | null {
+  const asked = [
+    ...metrics.map(({ name }) => quoted(name)),
+    ...(subgroups.length === 0 ? [] : [`subgroups by ${list(subgroups.map(quoted))}`]),
+  ];
+  return asked.length === 0 ? null : `${list(asked)}.`;
 }

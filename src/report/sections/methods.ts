@@ -176,9 +176,9 @@ function methods(inputs: ReportInputs): MethodsSection["methods"] {
       source: "Pareto 1896, on the tail on scales of ratios; the steps are this tool\u2019s",
     },
     {
-      when: reduction.metrics.some(({ covariate }) => covariate !== null),
+      when: reduction.metrics.some(({ covariate }) => covariate !== null) || reduction.facts.subgroups.length > 0,
       name: "Groups before enrolment",
-      how: "The standardised difference: of the means, over the root of the mean of both variances. It tells whether groups are alike enough and does not grow with their size; the check of section 3 tells whether chance made it.",
+      how: "The standardised difference: of the means or shares, over the root of the mean of both variances. It tells whether groups are alike enough and does not grow with their size; the check of section 3 tells whether chance made it.",
       source: "Austin 2009, Statistics in Medicine 28, 3083-3107; CONSORT 2010 item 15",
     },
     {
