@@ -1,17 +1,17 @@
 /** The library entry: a plan in, a decision report out. */
-import { readFile } from "node:fs/promises";
 import path from "node:path";
 import { performance } from "node:perf_hooks";
 import { decisionReport } from "./compute.ts";
-import { type Progress, UnusableLog } from "./engine/index.ts";
+import type { Progress } from "./engine/index.ts";
 import { judged } from "./judge.ts";
 import { measuredFromFile } from "./kept/from-file.ts";
 import { measure } from "./measure.ts";
-import { loadPlan, placeProblems, planJsonSchema, unreadablePlan } from "./plan/index.ts";
+import { planJsonSchema } from "./plan/index.ts";
 import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportJson, reportJsonSchema } from "./report/index.ts";
 import { replacedReport } from "./rerun.ts";
+import { orRefusal, type Refusal, readPlanFile, refusal } from "./run.ts";
 import { rerunOf } from "./steps.ts";
 import { version } from "./version.ts";
 
@@ -53,7 +53,7 @@ export type Outcome =
       readonly folder: string;
       readonly files: readonly string[];
     }
-  | { readonly status: 2 | 3; readonly text: string };
+  | Refusal;
 
 /**
  * Reads a plan and its log, and writes the report's files.
@@ -61,58 +61,45 @@ export type Outcome =
  * @throws when the signal aborts, or for a fault of this program; nothing is left half written
  */
 export async function closeout(planPath: string, options: CloseoutOptions = {}): Promise<Outcome> {
-  let planText: string;
-  try {
-    planText = await readFile(planPath, "utf8");
-  } catch (error) {
-    return { status: 2, text: unreadablePlan(planPath, (error as NodeJS.ErrnoException).code ?? "unknown") };
-  }
-  const loaded = loadPlan(planText);
-  const plan = "plan" in loaded ? loaded.plan : null;
-  const planProblems = "problems" in loaded ? loaded.problems : [];
+  const file = await readPlanFile(planPath);
+  if ("status" in file) return file;
+  const { plan, text: planText, folder: planFolder, loaded } = file;
   const folder = plan === null ? null : await openFolder(plan.experiment, options.out);
   if (folder !== null && "refused" in folder) return { status: 2, text: folder.refused };
   try {
-    const planFolder = path.dirname(path.resolve(planPath));
-    const fromCells = options.fromCells !== undefined;
-    const began = performance.now();
-    const found =
-      plan !== null && options.fromCells !== undefined
-        ? await measuredFromFile(plan, planText, options.fromCells)
-        : await measure(plan, loaded.source, planFolder, { ...options, rejectsTo: folder?.staged("rejects.csv") });
-    const tookMs = performance.now() - began;
-    if ("refused" in found) return { status: 2, text: found.refused };
-    if (plan === null || folder === null || "problems" in found) {
-      const problems = [...planProblems, ...("problems" in found ? found.problems : [])];
-      return { status: 2, text: placeProblems(loaded.source, planPath, problems) };
-    }
-    const replaced = await replacedReport(
-      folder,
-      options.previous,
-      plan.experiment,
-      planText,
-      found.reduction,
-      fromCells,
-    );
-    if ("refused" in replaced) return { status: 2, text: replaced.refused };
-    const judgement = judged(plan, found);
-    const now = { plan, planText, planFolder, measured: found, judged: judgement, tookMs, fromCells };
-    const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
-    const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
-    options.signal?.throwIfAborted();
-    const kept = await folder.keep(rendered.files, replaced.history);
-    const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
-    const terminal = rendered.terminal({
-      report: path.join(folder.shown, "report.html"),
-      summary: path.join(folder.shown, "summary.md"),
+    return await orRefusal<Outcome>(file, async () => {
+      const fromCells = options.fromCells !== undefined;
+      const began = performance.now();
+      const found =
+        plan !== null && options.fromCells !== undefined
+          ? await measuredFromFile(plan, planText, options.fromCells)
+          : await measure(plan, loaded.source, planFolder, { ...options, rejectsTo: folder?.staged("rejects.csv") });
+      const tookMs = performance.now() - began;
+      if ("refused" in found) return { status: 2, text: found.refused };
+      if ("problems" in found) return refusal(file, found.problems);
+      if (plan === null || folder === null) return refusal(file);
+      const replaced = await replacedReport(
+        folder,
+        options.previous,
+        plan.experiment,
+        planText,
+        found.reduction,
+        fromCells,
+      );
+      if ("refused" in replaced) return { status: 2, text: replaced.refused };
+      const judgement = judged(plan, found);
+      const now = { plan, planText, planFolder, measured: found, judged: judgement, tookMs, fromCells };
+      const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
+      const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
+      options.signal?.throwIfAborted();
+      const kept = await folder.keep(rendered.files, replaced.history);
+      const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
+      const terminal = rendered.terminal({
+        report: path.join(folder.shown, "report.html"),
+        summary: path.join(folder.shown, "summary.md"),
+      });
+      return { status: 0, report: rendered.json, terminal, folder: folder.path, files: written };
     });
-    return { status: 0, report: rendered.json, terminal, folder: folder.path, files: written };
-  } catch (error) {
-    if (!(error instanceof UnusableLog)) throw error;
-    // A plan with mistakes is told of them first; the log may be meant otherwise.
-    return plan === null
-      ? { status: 2, text: placeProblems(loaded.source, planPath, planProblems) }
-      : { status: 3, text: error.message };
   } finally {
     await folder?.discard();
   }

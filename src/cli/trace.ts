@@ -1,6 +1,7 @@
 import type { TraceOptions } from "../index.ts";
 import type { Library } from "./library.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
+import { told } from "./told.ts";
 
 export interface TraceArguments {
   readonly plan: string;
@@ -15,13 +16,5 @@ export async function trace(
   signal: AbortSignal,
 ): Promise<ExitStatus> {
   const outcome = await library.trace(plan, unit, { ...options, progress: terminal.progress, signal });
-  terminal.settle();
-  if (outcome.status !== 0) {
-    // A reading that was stopped can look like a log that cannot be read.
-    signal.throwIfAborted();
-    terminal.complain(outcome.text);
-    return outcome.status;
-  }
-  terminal.print(outcome.terminal);
-  return 0;
+  return told(outcome, terminal, signal, (text) => text);
 }
