@@ -3,7 +3,8 @@ import { check } from "./check.ts";
 import { compare } from "./compare.ts";
 import { demo } from "./demo.ts";
 import type { Library } from "./library.ts";
-import { type ReportArguments, report } from "./report.ts";
+import { DEBUG, MEMORY, type RawOptions, readOptions, THREADS } from "./options.ts";
+import { report } from "./report.ts";
 import { schema } from "./schema.ts";
 import { seal } from "./seal.ts";
 import { addSize } from "./size.ts";
@@ -83,9 +84,9 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
       "--from-cells <FILE>",
       "take the figures of an earlier report's cells.json, to see another confidence or limit",
     )
-    .option("--threads <N>", "how many processor cores to use (default: all)")
-    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(THREADS)
+    .addOption(MEMORY)
+    .addOption(DEBUG)
     .action(async (plan: string, options: RawOptions) => {
       const read = readOptions(options, facts(program, "report"));
       end(await report({ plan, options: read }, terminal, await load(), signal));
@@ -104,9 +105,9 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
       "recompute from cells.json beside the report, without the log, and say what that leaves unproven",
     )
     .option("--base <DIR>", "the folder that the plan lay in (default: looked for above the report)")
-    .option("--threads <N>", "how many processor cores to use (default: all)")
-    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(THREADS)
+    .addOption(MEMORY)
+    .addOption(DEBUG)
     .action(async (file: string, options: RawOptions) => {
       const { threads, memory } = readOptions(options, facts(program, "verify"));
       end(
@@ -127,7 +128,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .argument("NEW", "another report.json")
     .usage("OLD NEW [options]")
     .option("--out <FILE>", "write it as a document, an HTML file, instead of to the terminal")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(DEBUG)
     .action(async (before: string, after: string, options: RawOptions) => {
       end(await compare({ before, after, out: options.out }, terminal, await load()));
     });
@@ -140,7 +141,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     )
     .argument("PLAN", "the plan, a YAML file")
     .usage("PLAN")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(DEBUG)
     .action(async (plan: string) => end(await seal(plan, terminal, await load())));
 
   program
@@ -152,9 +153,9 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
     .usage("PLAN [options]")
     .option("--out <DIR>", "the report's folder (default: out/ and the experiment's name, in the current folder)")
-    .option("--threads <N>", "how many processor cores to use (default: all)")
-    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(THREADS)
+    .addOption(MEMORY)
+    .addOption(DEBUG)
     .action(async (plan: string, options: RawOptions) => {
       const read = readOptions(options, facts(program, "check"));
       end(await check({ plan, options: read }, terminal, await load(), signal));
@@ -169,9 +170,9 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .argument("PLAN", "the plan, a YAML file; the log's files are named in it")
     .usage("PLAN --unit ID [options]")
     .requiredOption("--unit <ID>", "the id, as the log has it")
-    .option("--threads <N>", "how many processor cores to use (default: all)")
-    .option("--memory <SIZE>", "how much memory the engine may use before it writes to disk, such as 4GB")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(THREADS)
+    .addOption(MEMORY)
+    .addOption(DEBUG)
     .action(async (plan: string, options: RawOptions & { readonly unit: string }) => {
       const { out: _none, ...read } = readOptions(options, facts(program, "trace"));
       end(await trace({ plan, unit: options.unit, options: read }, terminal, await load(), signal));
@@ -185,7 +186,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     )
     .argument("[DIR]", "where to write plan.yaml, data/ and report/", "out/demo")
     .usage("[DIR] [options]")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(DEBUG)
     .action(async (folder: string) => end(await demo(folder, terminal, await load(), signal)));
 
   addSize(program, () => facts(program, "size"), terminal, load, end);
@@ -196,7 +197,7 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .description("Prints a JSON Schema. With the plan's, an editor completes and checks a plan while you write it.")
     .argument("[OF]", "plan, report for report.json, or check for check.json", "plan")
     .usage("[plan|report|check]")
-    .option("--debug", "on a fault of closeout itself, print where it happened")
+    .addOption(DEBUG)
     .action(async (of: string) => {
       if (of !== "plan" && of !== "report" && of !== "check") {
         throw wrongArguments(`There is no schema of "${of}".`, facts(program, "schema"));
@@ -215,37 +216,6 @@ Examples:
 Exit status: 0 done, whatever the report concludes; 2 the plan or the arguments
 are wrong, or a file, column or unit that they name is not there; 3 the log cannot
 be used; 4 verify: the report does not hold; 1 a fault of closeout itself.`;
-
-interface RawOptions {
-  readonly out?: string;
-  readonly previous?: string;
-  readonly base?: string;
-  readonly cells?: boolean;
-  readonly fromCells?: string;
-  readonly threads?: string;
-  readonly memory?: string;
-  readonly figures?: boolean;
-}
-
-function readOptions(raw: RawOptions, command: CommandFacts): ReportArguments["options"] {
-  const problems: string[] = [];
-  if (raw.out?.trim() === "") problems.push("--out needs the name of a folder.");
-  if (raw.threads !== undefined && !/^[1-9]\d{0,3}$/.test(raw.threads)) {
-    problems.push(`--threads ${raw.threads}: expected a whole number, 1 or more.`);
-  }
-  if (raw.memory !== undefined && !/^\d+(\.\d+)?\s?[KMGT]i?B$/i.test(raw.memory)) {
-    problems.push(`--memory ${raw.memory}: expected a size with its unit, such as 500MB or 4GB.`);
-  }
-  if (problems.length > 0) throw wrongArguments(problems.join("\n"), command);
-  return {
-    ...(raw.out === undefined ? {} : { out: raw.out }),
-    ...(raw.fromCells === undefined ? {} : { fromCells: raw.fromCells }),
-    ...(raw.previous === undefined ? {} : { previous: raw.previous }),
-    ...(raw.threads === undefined ? {} : { threads: Number(raw.threads) }),
-    ...(raw.memory === undefined ? {} : { memory: raw.memory }),
-    ...(raw.figures === undefined ? {} : { figures: raw.figures }),
-  };
-}
 
 /** Commander's complaint as ours; null for one that these commands cannot bring about. */
 function inOurWords(error: CommanderError, program: Command, argv: readonly string[]): UsageError | null {
