@@ -26,6 +26,7 @@ export { covariates } from "./balance.ts";
 export { BEFORE_THE_END, blindChecks } from "./blind.ts";
 export { tailsInWords } from "./normality.ts";
 export { planChanged } from "./plan-changed.ts";
+export { plannedShares } from "./planned-shares.ts";
 export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";
 
 /** Every soundness check, in the order of METHODS 7. A check that does not apply gives null. */

@@ -10,7 +10,7 @@ import { typeset } from "./typeset.ts";
 
 const FIGURES = "figures";
 /** What this file names, and nothing else that may lie in a folder called figures. */
-const OURS = /^(forest|flow|(shape|sampling|choices|accrual|days|subgroup|afterwards)-\d+)\.svg$/;
+const OURS = /^(forest|flow|(allocation|shape|sampling|choices|accrual|days|subgroup|afterwards)-\d+)\.svg$/;
 
 /** @param json report.json as it is written */
 export function extraFiles(inputs: ReportInputs, page: Page, json: string): ExtraFile[] {

@@ -3,6 +3,7 @@ import { namesToIsolate } from "./direction.ts";
 import { controlOf, kindText, whenText } from "./plan-words.ts";
 import { type AccrualPart, accrualParts } from "./sections/accrual.ts";
 import { type AfterwardsSection, afterwardsSection } from "./sections/afterwards.ts";
+import { allocationParts } from "./sections/allocation-by-day.ts";
 import { type BaselineTable, baselineTable } from "./sections/baseline.ts";
 import { type ChangesSection, changesSection } from "./sections/changes.ts";
 import { type ChecksSection, checksSection } from "./sections/checks.ts";
@@ -44,6 +45,8 @@ export interface Page {
   readonly rerun: RerunLines | null;
   readonly changes: ChangesSection | null;
   readonly checks: ChecksSection;
+  /** How each day's units split; none where there is one day. */
+  readonly allocation: readonly AccrualPart[];
   /** The end of section 3. */
   readonly incidents: readonly IncidentText[];
   readonly design: DesignSection;
@@ -116,6 +119,7 @@ export async function page(inputs: ReportInputs, changes: ChangesJson | null = n
     rerun: changes === null ? null : rerunLines(changes, plan),
     changes: changes === null ? null : await changesSection(changes, plan),
     checks: checksSection(checks),
+    allocation: await allocationParts(plan, reduction),
     incidents: incidentTexts(inputs),
     design: designSection(plan, {
       drawn: effects.some(({ resampled }) => resampled !== null),

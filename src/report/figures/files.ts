@@ -14,9 +14,10 @@ export interface FigureFile {
 
 /** Every figure of the page as a file of its own, from the same drawings and words. */
 export function figureFiles(page: Page): FigureFile[] {
-  const { decision, flow, metrics, afterwards } = page;
+  const { decision, allocation, flow, metrics, afterwards } = page;
   return [
     ...(decision.forest === null ? [] : [file("forest", forestSheet(decision.forest))]),
+    ...allocation.flatMap(({ id, drawing }) => (drawing === null ? [] : [file(id, drawnSheet(drawing, 240))])),
     file("flow", flowSheet(flow)),
     ...metrics.flatMap(({ distribution, sampling, accrual, days, subgroups, choices }) => [
       ...(distribution === null ? [] : [file(distribution.id, distributionSheet(distribution))]),
