@@ -7,7 +7,7 @@ import { reductionOf } from "./reductions.ts";
 const FIRST_DAY = 20_514; // 2 March 2026, a Monday
 
 /** An effect that settles over six days; with the ends of a band twice as wide as the interval. */
-function accrualOf(metric: string, estimates: readonly number[]): Accrual {
+export function accrualOf(metric: string, estimates: readonly number[]): Accrual {
   return {
     metric,
     variant: "calendar",

@@ -3,6 +3,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adopt, effectOf, notSettled } from "./cases.ts";
 import { handChoices } from "./choices.ts";
 import { shareArm } from "./contrasts.ts";
+import { accrualOf } from "./groups.ts";
 import { booked, farePlan } from "./plans.ts";
 
 const hour = (day: number, hours: number) => BigInt(Date.UTC(2026, 2, day, hours)) * 1000n;
@@ -32,6 +33,10 @@ function withIncidents(inputs: ReportInputs): ReportInputs {
   return {
     ...inputs,
     choices: [rows],
+    accruals: [
+      accrualOf("Booked", [0.02, 0.016, 0.013, 0.012, 0.012, 0.012]),
+      accrualOf("Fare per visitor", [9, 8, 7]),
+    ],
     reduction: {
       ...inputs.reduction,
       facts: {

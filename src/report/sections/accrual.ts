@@ -12,6 +12,15 @@ import { capital, count, intervalInWords, planPercent } from "../../words/index.
 import { accrual as accrualChart } from "../charts/accrual.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { axisLabel, figures, scaleText } from "../figure-words.ts";
+import {
+  drawnMarks,
+  type IncidentMark,
+  incidentMarks,
+  lettersOn,
+  marksInWords,
+  marksReading,
+  namesOf,
+} from "./accrual-marks.ts";
 import { dayText, weekdaysSentence } from "./weekdays.ts";
 
 /** How one effect came about as units enrolled: words, a drawing where the measure decides, and the numbers in a table. */
@@ -34,38 +43,66 @@ export async function accrualParts(
   accruals: readonly Accrual[],
   reduction: Reduction,
 ): Promise<Map<string, AccrualPart[]>> {
+  const since = reduction.facts.analysedByDay[0]?.day;
   const found = new Map<string, AccrualPart[]>(plan.metrics.map(({ name }) => [name, []]));
   for (const [i, accrual] of accruals.entries()) {
     const effect = effects.find(({ metric, variant }) => metric === accrual.metric && variant === accrual.variant);
     if (effect === undefined)
       throw new Error(`an accrual of ${accrual.metric} and ${accrual.variant} without an effect`);
-    const part = await partOf(plan, effect, accrual, `accrual-${i + 1}`);
+    const part = await partOf(plan, effect, accrual, since, `accrual-${i + 1}`);
     const weekdays = i === 0 ? [weekdaysSentence(plan, reduction)] : [];
     found.get(accrual.metric)?.push({ ...part, sentences: [...weekdays, ...part.sentences] });
   }
   return found;
 }
 
-async function partOf(plan: Plan, effect: Effect, accrual: Accrual, id: string): Promise<AccrualPart> {
+async function partOf(
+  plan: Plan,
+  effect: Effect,
+  accrual: Accrual,
+  since: number | undefined,
+  id: string,
+): Promise<AccrualPart> {
   const { many } = plan.unitCalled;
   const metric = metricOf(effect, plan);
   const shown = accrual.days;
   const what = scaleText(absolute(effect, metric).scale).replace("Difference", "difference");
+  const marks = shown.length === 0 ? [] : incidentMarks(plan, shown, since);
+  const isMarked = shown.some(({ day }) => lettersOn(marks, day) !== "");
+  const isDrawn = effect.role !== "secondary" && shown.length >= 2;
   const caption = `${effect.metric}, ${effect.variant} against ${effect.control}: ${what}, as ${many} enrolled`;
   return {
     id,
     title: `${capital(effect.variant)} against ${effect.control}: as ${many} enrolled`,
-    sentences: shown.length === 0 ? [notShown(plan)] : sentences(plan, effect, metric, accrual),
-    drawing:
-      effect.role === "secondary" || shown.length < 2
-        ? null
-        : { caption, reading: READING, drawing: await drawn(plan, effect, metric, shown, caption, id) },
+    sentences: [
+      ...(shown.length === 0 ? [notShown(plan)] : sentences(plan, effect, metric, accrual)),
+      ...(isDrawn || !isMarked ? [] : [namesOf(marks)]),
+    ],
+    drawing: isDrawn
+      ? {
+          caption,
+          reading: `${READING}${marksReading(marks, plan)}`,
+          drawing: await drawn(plan, effect, metric, shown, marks, caption, id),
+        }
+      : null,
     caption,
     head: "up to",
-    columns: [`${many} so far`, "difference", "low", "high", "band, low", "band, high"],
+    columns: [
+      `${many} so far`,
+      "difference",
+      "low",
+      "high",
+      "band, low",
+      "band, high",
+      ...(isMarked ? ["incident"] : []),
+    ],
     rows: shown.map(({ day, units, estimate, low, high, bandLow, bandHigh }) => ({
       day: dayText(day),
-      cells: [count(units), ...figures([estimate, low, high, bandLow, bandHigh])],
+      cells: [
+        count(units),
+        ...figures([estimate, low, high, bandLow, bandHigh]),
+        ...(isMarked ? [lettersOn(marks, day)] : []),
+      ],
     })),
   };
 }
@@ -78,18 +115,20 @@ async function drawn(
   effect: Effect,
   metric: Metric,
   days: readonly AccrualDay[],
+  marks: readonly IncidentMark[],
   title: string,
   id: string,
 ): Promise<Drawing> {
   const { scale } = absolute(effect, metric);
   const points = days.flatMap(({ estimate, ...day }) => (estimate === null ? [] : [{ ...day, estimate }]));
-  const spec = accrualChart(points, {
+  const words = {
     xTitle: `${plan.unitCalled.many} enrolled and counted`,
     xLabel: count,
-    yLabel: (value) => axisLabel(value, scale),
-  });
+    yLabel: (value: number) => axisLabel(value, scale),
+  };
+  const spec = accrualChart(points, words, drawnMarks(marks, days));
   const last = days.at(-1);
-  const description = `${scaleText(scale)}, against the number of ${plan.unitCalled.many}, on ${days.length} days. ${atTheEnd(effect, metric, last, plan)}`;
+  const description = `${scaleText(scale)}, against the number of ${plan.unitCalled.many}, on ${days.length} days. ${atTheEnd(effect, metric, last, plan)}${marksInWords(marks, plan)}`;
   return draw(spec, `${id}-drawing`, { title, description });
 }
 
