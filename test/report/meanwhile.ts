@@ -3,7 +3,7 @@ import type { ReportInputs } from "../../src/report/types.ts";
 import { adopt, effectOf, notSettled } from "./cases.ts";
 import { handChoices } from "./choices.ts";
 import { shareArm } from "./contrasts.ts";
-import { accrualOf } from "./groups.ts";
+import { accrualOf, grouped } from "./groups.ts";
 import { booked, farePlan } from "./plans.ts";
 
 const hour = (day: number, hours: number) => BigInt(Date.UTC(2026, 2, day, hours)) * 1000n;
@@ -41,6 +41,7 @@ function withIncidents(inputs: ReportInputs): ReportInputs {
       ...inputs.reduction,
       facts: {
         ...facts,
+        analysedByDay: grouped.reduction.facts.analysedByDay,
         inIncidents: [
           [41_150, 41_150],
           [2_120, 2_181],
