@@ -14,6 +14,8 @@ const TOP = 8;
 const BOTTOM = 44;
 const TICK = 4;
 const MARGIN = 0.05;
+/** About the width of a letter of the axis. */
+const LETTER = 6.5;
 
 /** A range of values with round numbers to be written at it. */
 export interface Range {
@@ -77,12 +79,18 @@ export function framed(x: Range, y: Range, words: AxisWords, marks: readonly Lay
       ),
       letters(
         "center",
-        x.ticks.map((tick) => ({ x: at.x(tick), y: bottom + TICK + 13, text: words.xLabel(tick) })),
+        x.ticks.map((tick) => ({ ...within(at.x(tick), words.xLabel(tick)), y: bottom + TICK + 13 })),
       ),
       letters("right", [{ x: WIDTH - RIGHT, y: HEIGHT - 6, text: words.xTitle }]),
       ...marks,
     ],
   };
+}
+
+/** A text about its place, moved in where it would reach over the drawing's edge. */
+function within(x: number, text: string): { readonly x: number; readonly text: string } {
+  const half = (text.length * LETTER) / 2;
+  return { x: Math.min(x, WIDTH - half), text };
 }
 
 /** A field of the data that holds a place. */
