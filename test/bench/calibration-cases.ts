@@ -12,7 +12,7 @@ export interface Case {
 
 const RUNS = 10_000;
 const GATE_RUNS = 20_000;
-const BOOTSTRAPPED = 1000;
+const BOOTSTRAPPED = 4000;
 
 const ALIKE = [normal, exponential, lognormal(1), lognormal(1.5), lognormal(2), buyers(0.1, 1), bernoulli(0.01)];
 const SIZES = [
