@@ -7,7 +7,7 @@ import {
   otherChoices,
   subgroups as subgroupsOf,
 } from "./decision/index.ts";
-import { type Judged, judged } from "./judge.ts";
+import type { Judged } from "./judge.ts";
 import { cellsFile, cellsText } from "./kept/file.ts";
 import type { Measured } from "./measure.ts";
 import { type Plan, planChanges } from "./plan/index.ts";
@@ -38,11 +38,7 @@ export async function decisionReport(
     metrics:
       further === null
         ? null
-        : {
-            plan: further.plan,
-            reduction: further.measured.reduction,
-            effects: judged(further.plan, further.measured).effects,
-          },
+        : { plan: further.plan, reduction: further.measured.reduction, effects: found.afterwards },
   };
   const kept = cellsText(cellsFile(plan, planText, measured, found, rerun?.steps ?? null));
   const rendered = await renderReport({

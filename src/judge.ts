@@ -15,11 +15,23 @@ export interface Judged {
   readonly effects: readonly Effect[];
   readonly checks: readonly Check[];
   readonly conclusion: Conclusion;
+  /** Of the metrics that were asked afterwards: no check and no rule looks at them. */
+  readonly afterwards: readonly Effect[];
 }
 
-export function judged(planned: Plan, { reduction, arms, pairs }: Measured): Judged {
+export function judged(planned: Plan, measured: Measured): Judged {
+  const { reduction, arms, pairs, afterwards: further } = measured;
   const plan = atThisLook(planned, reduction);
-  const effects = allEffects(plan, arms, reduction, pairs);
+  const effects = effectsOf(planned, measured);
   const checks = soundnessChecks(plan, reduction, effects.map(contrastFigures));
-  return { effects, checks, conclusion: concluded(plan, effects, checks, reduction, arms, pairs) };
+  return {
+    effects,
+    checks,
+    conclusion: concluded(plan, effects, checks, reduction, arms, pairs),
+    afterwards: further === null ? [] : effectsOf(further.plan, further.measured),
+  };
+}
+
+function effectsOf(planned: Plan, { reduction, arms, pairs }: Measured): Effect[] {
+  return allEffects(atThisLook(planned, reduction), arms, reduction, pairs);
 }

@@ -51,23 +51,6 @@ export type Arm =
       readonly noise: number;
     };
 
-/** Sums of one value by bucket: n and the first two power sums about any one pivot, in any one scale. Arrays of one length. */
-export interface BucketSums {
-  readonly n: Float64Array;
-  readonly s1: Float64Array;
-  readonly s2: Float64Array;
-}
-
-/** Sums of two values (y, x) of the same units by bucket, each about a pivot and in a scale. Arrays of one length. */
-export interface PairSums {
-  readonly n: Float64Array;
-  readonly y: Float64Array;
-  readonly x: Float64Array;
-  readonly yy: Float64Array;
-  readonly yx: Float64Array;
-  readonly xx: Float64Array;
-}
-
 /**
  * Exact joint sums of two values (y, x) over the units of an arm that have both: S_jk is the sum of u^j w^k, u = (y - pivot)
  * / scale with y's pivot and scale, w likewise with x's. Groups with the same pivots and scales are merged by adding.

@@ -1,6 +1,6 @@
 import { bucketsOf, type Effect } from "../decision/index.ts";
 import type { AdjustedRequest, KeptBuckets, MetricCells, Reduction, ScoreTable, Session } from "../engine/index.ts";
-import { type Judged, judged } from "../judge.ts";
+import type { Judged } from "../judge.ts";
 import { type Measured, whileOpen } from "../measure.ts";
 import { type Plan, planAfterwards } from "../plan/index.ts";
 import type { StepsJson } from "../report/index.ts";
@@ -29,7 +29,7 @@ export function cellsFile(
   plan: Plan,
   planText: string,
   measured: Measured,
-  { effects }: Judged,
+  found: Judged,
   steps: StepsJson | null,
 ): CellsFile {
   const { afterwards } = measured;
@@ -37,11 +37,8 @@ export function cellsFile(
     format: 1,
     experiment: plan.experiment,
     plan: planText,
-    ...keptFigures(plan, measured, effects),
-    afterwards:
-      afterwards === null
-        ? null
-        : keptFigures(afterwards.plan, afterwards.measured, judged(afterwards.plan, afterwards.measured).effects),
+    ...keptFigures(plan, measured, found.effects),
+    afterwards: afterwards === null ? null : keptFigures(afterwards.plan, afterwards.measured, found.afterwards),
     steps,
   };
 }

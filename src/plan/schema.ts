@@ -267,7 +267,6 @@ export const planSchema = z
 /** The plan after its shape was checked, defaults filled in, keys as in the YAML. */
 export type PlanYaml = z.output<typeof planSchema>;
 export type MetricYaml = PlanYaml["metrics"][number];
-export type AfterwardsYaml = PlanYaml["asked-afterwards"]["metrics"][number];
 export type PartYaml = MetricYaml["of"];
 export type WhereYaml = NonNullable<PartYaml["where"]>;
 export type AmountYaml = NonNullable<MetricYaml["worthwhile"]>;

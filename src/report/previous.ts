@@ -1,5 +1,6 @@
 import { z } from "zod";
 import { fingerprintOf } from "./history.ts";
+import { decision, numberOrNull, outcome, role, zone } from "./schema-values.ts";
 
 /** An earlier report, as far as a comparison needs it. */
 export interface PreviousReport {
@@ -9,7 +10,6 @@ export interface PreviousReport {
   readonly report: EarlierReport;
 }
 
-const numberOrNull = z.number().nullable();
 const relative = z.object({ estimate: z.number(), low: numberOrNull, high: numberOrNull }).nullable();
 const difference = z.object({ estimate: numberOrNull, low: numberOrNull, high: numberOrNull });
 const arm = z.object({ units: z.number(), total: numberOrNull });
@@ -20,7 +20,7 @@ const earlier = z.object({
   format: z.literal(1),
   experiment: z.string(),
   conclusion: z.object({
-    decision: z.enum(["adopt", "keep-control", "not-settled", "undecidable"]),
+    decision,
     variant: z.string().nullable(),
     sentence: z.string(),
   }),
@@ -38,22 +38,13 @@ const earlier = z.object({
     ),
     analysed: z.record(z.string(), z.number()),
   }),
-  checks: z.array(z.object({ id: z.string(), result: z.enum(["pass", "caution", "fail"]) })),
+  checks: z.array(z.object({ id: z.string(), result: outcome })),
   effects: z.array(
     z.object({
       metric: z.string(),
       variant: z.string(),
-      role: z.enum(["primary", "secondary", "guardrail"]),
-      zone: z.enum([
-        "worthwhile",
-        "worse",
-        "too-small",
-        "better",
-        "no-worthwhile-gain",
-        "not-settled",
-        "within",
-        "beyond",
-      ]),
+      role,
+      zone,
       arms: z.object({ control: arm, variant: arm }),
       difference,
       relative,

@@ -1,15 +1,13 @@
 import { z } from "zod";
 import { changesSchema } from "./changes/schema.ts";
+import { decision, fingerprint, numberOrNull, outcome, role, zone } from "./schema-values.ts";
 
-const outcome = z.enum(["pass", "caution", "fail"]);
 const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
 );
 export const count = z.number().min(0);
 const tail = z.number().min(0).max(1);
 const byVariant = z.record(z.string(), count);
-export const numberOrNull = z.number().nullable();
-const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
 
 const arm = z.strictObject({
   units: count,
@@ -42,7 +40,7 @@ const relative = z
 
 const effect = z.strictObject({
   metric: z.string(),
-  role: z.enum(["primary", "secondary", "guardrail"]),
+  role,
   summary: z.enum(["mean", "proportion", "quantile", "ratio-of-totals"]),
   variant: z.string(),
   control: z.string(),
@@ -53,7 +51,7 @@ const effect = z.strictObject({
     .strictObject({ difference, relative, theta: z.number(), varianceReduction: z.number() })
     .nullable()
     .describe("Adjusted for the plan's covariate. Where not null its difference decides, and zone and power are its."),
-  zone: z.enum(["worthwhile", "worse", "too-small", "better", "no-worthwhile-gain", "not-settled", "within", "beyond"]),
+  zone,
   power: z.strictObject({ detectable: numberOrNull, unitsForWorthwhile: numberOrNull }),
   normality: z
     .strictObject({
@@ -193,7 +191,7 @@ export const reportSchema = z.strictObject({
   format: z.literal(1),
   experiment: z.string(),
   conclusion: z.strictObject({
-    decision: z.enum(["adopt", "keep-control", "not-settled", "undecidable"]),
+    decision,
     variant: z.string().nullable().describe("The adopted variant, else null."),
     sentence: z.string(),
     reasons: z.array(z.string()),

@@ -1,5 +1,6 @@
+import type { BucketCells } from "../cells/types.ts";
 import { isAbsent } from "./absent.ts";
-import { type BucketCells, type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
+import { type DrawTable, gapOfX, tableOfArms } from "./bucket-cells.ts";
 import { drawRows, type Studentised, studentised, sumRows } from "./draws.ts";
 import { type Seed, wordsOf } from "./generator.ts";
 import { type Histogram, histogram } from "./histogram.ts";

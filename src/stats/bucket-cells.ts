@@ -1,18 +1,4 @@
-import type { BucketSums, PairSums } from "../cells/types.ts";
-
-export type { BucketSums, PairSums };
-
-/** What resampling takes of one contrast: both arms' sums by the same buckets, with the same pivots and scales. */
-export type BucketCells =
-  | { readonly kind: "mean"; readonly control: BucketSums; readonly variant: BucketSums }
-  | {
-      /** y is the numerator and x the denominator, or y the value and x the covariate. */
-      readonly kind: "ratio" | "adjusted";
-      readonly pivots: readonly [number, number];
-      readonly scales: readonly [number, number];
-      readonly control: PairSums;
-      readonly variant: PairSums;
-    };
+import type { BucketCells, BucketSums, PairSums } from "../cells/types.ts";
 
 /**
  * Cells as one table for the draws, row by row, without the buckets that have no unit.

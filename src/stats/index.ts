@@ -1,5 +1,6 @@
 // Distributions
 
+export type { BucketCells } from "../cells/types.ts";
 // Contrasts
 export { isAbsent } from "./absent.ts";
 export { type AdjustedArm, adjustedArms, meanFromPivot } from "./adjusted-arm.ts";
@@ -15,7 +16,6 @@ export { type BandFor, bandCritical } from "./band.ts";
 export { benjaminiHochberg } from "./benjamini-hochberg.ts";
 export { bonferroniCritical, bonferroniP } from "./bonferroni.ts";
 export type { BootstrapT } from "./bootstrap-t.ts";
-export type { BucketCells } from "./bucket-cells.ts";
 export { type ChiSquareTest, chiSquareUpperTail } from "./chi-square.ts";
 export { type Alike, contrast, contrastBy } from "./contrast.ts";
 export { type Adjusted, type AdjustedBy, adjusted, adjustedPart } from "./covariate.ts";

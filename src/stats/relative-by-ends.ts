@@ -1,7 +1,7 @@
 import type { Arm } from "../cells/types.ts";
 import { isAbsent } from "./absent.ts";
+import { bootstrapRelative } from "./bootstrap-t.ts";
 import { level } from "./level.ts";
-import { relative } from "./relative.ts";
 import type { Absent, Relative } from "./types.ts";
 
 /**
@@ -26,9 +26,7 @@ export function relativeByEnds(
   if (isAbsent(c)) return c;
   if (isAbsent(t)) return t;
   const { estimate, standardError, low, high } = difference;
-  const [down, up] = [(estimate - low) / standardError, (high - estimate) / standardError];
-  if (!(down > 0 && up > 0)) return { absent: "lost-digits" };
-  const [ofLow, ofHigh] = [relative(c, t, down), relative(c, t, up)];
-  if (isAbsent(ofLow)) return ofLow;
-  return isAbsent(ofHigh) ? ofHigh : { estimate: ofLow.estimate, low: ofLow.low, high: ofHigh.high };
+  const [lowerQuantile, upperQuantile] = [(estimate - high) / standardError, (estimate - low) / standardError];
+  if (!(lowerQuantile < 0 && upperQuantile > 0)) return { absent: "lost-digits" };
+  return bootstrapRelative(c, t, { lowerQuantile, upperQuantile });
 }

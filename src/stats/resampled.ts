@@ -1,5 +1,5 @@
+import type { BucketCells } from "../cells/types.ts";
 import { type BootstrapT, bootstrapT } from "./bootstrap-t.ts";
-import type { BucketCells } from "./bucket-cells.ts";
 import { seedOf } from "./generator.ts";
 import { normalUpperTail } from "./normal.ts";
 import { type Randomisation, randomisation } from "./randomisation.ts";

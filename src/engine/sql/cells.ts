@@ -61,7 +61,6 @@ export interface Over {
   readonly from?: Statement;
 }
 export const EACH_BUCKET: Over = { bucket: sql`bucket`, units: sql`analysed` };
-export const EACH_ARM: Over = { bucket: sql`0`, units: sql`analysed` };
 /** Arm by arm, the units whose value is not 0. */
 export const unlessZero = (x: Statement): Over => ({ bucket: sql`0`, units: sql`(analysed AND ${x} <> 0)` });
 

@@ -1,9 +1,6 @@
 import { z } from "zod";
+import { decision, fingerprint, numberOrNull, outcome, role, zone } from "../schema-values.ts";
 
-const outcome = z.enum(["pass", "caution", "fail"]);
-const decision = z.enum(["adopt", "keep-control", "not-settled", "undecidable"]);
-const numberOrNull = z.number().nullable();
-const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);
 const byVariant = z.record(z.string(), z.number());
 const relative = z.strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull }).nullable();
 
@@ -22,16 +19,7 @@ const ends = { estimate: numberOrNull, low: numberOrNull, high: numberOrNull, re
 const shown = z
   .strictObject({
     ...ends,
-    zone: z.enum([
-      "worthwhile",
-      "worse",
-      "too-small",
-      "better",
-      "no-worthwhile-gain",
-      "not-settled",
-      "within",
-      "beyond",
-    ]),
+    zone,
     units: z.strictObject({ control: z.number(), variant: z.number() }),
     totals: z.strictObject({ control: numberOrNull, variant: numberOrNull }),
   })
@@ -67,7 +55,7 @@ export const changesSchema = z
       z.strictObject({
         metric: z.string(),
         variant: z.string(),
-        role: z.enum(["primary", "secondary", "guardrail"]),
+        role,
         before: shown,
         after: shown,
       }),

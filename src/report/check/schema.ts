@@ -1,5 +1,6 @@
 import { z } from "zod";
-import { checkSchema, count, flowSchema, numberOrNull, provenanceSchema } from "../schema.ts";
+import { checkSchema, count, flowSchema, provenanceSchema } from "../schema.ts";
+import { numberOrNull, role } from "../schema-values.ts";
 
 const day = z
   .string()
@@ -13,9 +14,7 @@ export const blindSchema = z.strictObject({
   rule: z
     .strictObject({
       sentences: z.array(z.string()),
-      metrics: z.array(
-        z.strictObject({ metric: z.string(), role: z.enum(["primary", "secondary", "guardrail"]), asked: z.string() }),
-      ),
+      metrics: z.array(z.strictObject({ metric: z.string(), role, asked: z.string() })),
     })
     .describe("The plan's rule in words."),
   schedule: z
