@@ -3,7 +3,7 @@ import path from "node:path";
 import { performance } from "node:perf_hooks";
 import { decisionReport } from "./compute.ts";
 import type { Progress } from "./engine/index.ts";
-import { judged } from "./judge.ts";
+import { drawn, judged } from "./judge.ts";
 import { measuredFromFile } from "./kept/from-file.ts";
 import { measure } from "./measure.ts";
 import { planJsonSchema } from "./plan/index.ts";
@@ -87,7 +87,7 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
         fromCells,
       );
       if ("refused" in replaced) return { status: 2, text: replaced.refused };
-      const judgement = judged(plan, found);
+      const judgement = await drawn(judged(plan, found), options);
       const now = { plan, planText, planFolder, measured: found, judged: judgement, tookMs, fromCells };
       const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
       const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);

@@ -53,6 +53,7 @@ export function betweenSentence(
     power: NO_POWER,
     normality: null,
     resampled: null,
+    toDraw: null,
   };
   const texts = told(effect, plan);
   const levels = levelsInWords(effect, plan);

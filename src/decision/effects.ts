@@ -135,6 +135,7 @@ function effect(
     power: NO_POWER,
     normality: null,
     resampled: null,
+    toDraw: null,
   };
 }
 

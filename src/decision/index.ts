@@ -38,11 +38,13 @@ export {
   type Unsized,
 } from "./next-test.ts";
 // how good the normal approximation is
-export { contrastFigures } from "./normality.ts";
+export { contrastFigures, withDraws } from "./normality.ts";
 export { otherIntervalSentence } from "./normality-words.ts";
 // what quantiles need of the units
 export { type ValuesAt, withOrderStatistics } from "./order-statistics.ts";
 export { type Choices, otherChoices } from "./other-choices.ts";
+// what figures are drawn of
+export { isPictured } from "./pictured.ts";
 export { analysedUnits, questionOf, questionOfNextTest } from "./power.ts";
 export { anyIsEnough } from "./rule.ts";
 export { askedOf, ruleSentences } from "./rule-words.ts";

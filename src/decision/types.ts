@@ -1,5 +1,5 @@
 import type { Role, Summary } from "../plan/types.ts";
-import type { Balance, Normality, Resampled } from "../stats/index.ts";
+import type { Balance, Normality, Resampled, ToDraw } from "../stats/index.ts";
 import type { Absent, Contrast } from "../stats/types.ts";
 
 export type Zone =
@@ -40,6 +40,8 @@ export interface Effect {
   readonly normality: ContrastNormality | null;
   /** Of the contrast that decides, at which critical value; null for a quantile, and where it has no interval. */
   readonly resampled: (Resampled & { readonly critical?: number }) | null;
+  /** What is still to be drawn for `resampled`; null once it is, and where nothing is. */
+  readonly toDraw: ToDraw | null;
 }
 
 /** Whether the normal approximation is good enough for one contrast (METHODS 3). */

@@ -11,8 +11,8 @@ import type { Counts } from "./share.ts";
 import type { TailPair } from "./tails.ts";
 import type { Absent, Level, Relative } from "./types.ts";
 
-/** Shares of the units at which the distribution is drawn, so that its way to the normal curve is seen. */
-const SHARES = [1 / 16, 1 / 4, 1] as const;
+/** Shares of the units at which the distribution is drawn too, so that its way to the normal curve is seen. */
+const SHARES = [1 / 16, 1 / 4] as const;
 /** Fewer units in an arm at such a share: not drawn there. */
 const UNITS_AT_LEAST = 20;
 
@@ -25,7 +25,10 @@ export interface BootstrapT {
   readonly draws: number;
   /** Draws that have no T; left out. */
   readonly undefinedDraws: number;
-  /** The drawn distribution of T at n/16, n/4 and n units; null where an arm has under 20 units or T is often undefined. */
+  /**
+   * The drawn distribution of T at n/16, n/4 and n units; null where an arm has under 20 units or T is often undefined. Empty
+   * where no picture is asked for.
+   */
   readonly drawn: readonly {
     readonly share: number;
     readonly histogram: Histogram | null;
@@ -38,7 +41,7 @@ export interface BootstrapT {
  *
  *   T* = (estimate* - estimate) / SE*, a ratio's R and a theta anew each draw;  [D - SE T*(1 - alpha/2), D - SE T*(alpha/2)]
  * T*(q) the (draws + 1) q-th smallest. A bucket holds units at random, so what its sums vary by is what units vary by. The
- * distribution at n/16 and n/4 units draws as many buckets fewer, of all buckets.
+ * distribution at n/16 and n/4 units draws as many buckets fewer, of all buckets, after those of the interval.
  * @param draws a multiple of 1,000; at least 4 / alpha, else the ends are the extreme draws
  * @returns few units or events, or over 1% of undefined draws: not drawn
  *
@@ -51,19 +54,14 @@ export function bootstrapT(
   draws: number,
   seed: Seed,
   shares: { readonly control: Counts; readonly variant: Counts } | null,
+  isPictured = true,
 ): BootstrapT | NotDrawn {
   const few = tooFew(cells, shares);
   if (few !== null) return few;
   const table = tableOfArms(cells);
   const fill = wordsOf(seed);
   const t = studentised(cells.kind, wholeOf(table), gapOfX(cells));
-  const units = Math.min(...[cells.control.n, cells.variant.n].map((n) => n.reduce((sum, m) => sum + m, 0)));
-
-  const found = SHARES.map((share) => ({
-    share,
-    values: units * share < UNITS_AT_LEAST ? null : drawnT(table, Math.round(table.rows * share), draws, t, fill),
-  }));
-  const all = found.at(-1)?.values ?? new Float64Array();
+  const all = drawnT(table, table.rows, draws, t, fill);
   const undefinedDraws = draws - all.length;
   if (tooManyUndefined(undefinedDraws, draws)) return { notDrawn: all.length === 0 ? "no-spread" : "undefined-draws" };
 
@@ -77,12 +75,21 @@ export function bootstrapT(
     upperQuantile,
     draws,
     undefinedDraws,
-    drawn: found.map(({ share, values }) =>
-      values === null || tooManyUndefined(draws - values.length, draws)
-        ? { share, histogram: null, tails: null }
-        : { share, histogram: histogram(values), tails: beyond(values, normalCritical(alpha)) },
-    ),
+    drawn: isPictured ? [...SHARES.map(fewer), { share: 1, ...pictured(all) }] : [],
   };
+
+  function fewer(share: number): BootstrapT["drawn"][number] {
+    const units = Math.min(...[cells.control.n, cells.variant.n].map((n) => n.reduce((sum, m) => sum + m, 0)));
+    const isShown = units * share >= UNITS_AT_LEAST;
+    const values = isShown ? drawnT(table, Math.round(table.rows * share), draws, t, fill) : new Float64Array();
+    return { share, ...pictured(values) };
+  }
+
+  function pictured(values: Float64Array) {
+    return tooManyUndefined(draws - values.length, draws)
+      ? { histogram: null, tails: null }
+      : { histogram: histogram(values), tails: beyond(values, normalCritical(alpha)) };
+  }
 }
 
 /**

@@ -53,10 +53,14 @@ export function drawRows(picks: Uint32Array, rows: number, fill: (into: Uint32Ar
   for (let i = 0; i < picks.length; i++) picks[i] = (picks[i] as number) * scale;
 }
 
-/** The first `many` of all rows become a random choice of that many, the rest stay behind them (Fisher and Yates 1938). */
-export function dealRows(order: Uint32Array, many: number, next: () => number): void {
-  for (let i = 0; i < many; i++) {
-    const other = i + Math.floor((next() / 2 ** 32) * (order.length - i));
+/**
+ * The first rows become a random choice of all, as many as there are words, the rest stay behind them (Fisher and Yates 1938).
+ * @param words as drawn by `fill`, 32 bits each
+ */
+export function dealRows(order: Uint32Array, words: Uint32Array, fill: (into: Uint32Array) => void): void {
+  fill(words);
+  for (let i = 0; i < words.length; i++) {
+    const other = (i + ((words[i] as number) / 2 ** 32) * (order.length - i)) >>> 0;
     const held = order[i] as number;
     order[i] = order[other] as number;
     order[other] = held;

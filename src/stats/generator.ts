@@ -55,10 +55,10 @@ export function generator(seed: Seed): () => number {
  * Source: Fowler, Noll and Vo, FNV-1a with 32 bits (IETF draft-eastlake-fnv).
  */
 export function seedOf(use: string, columns: readonly (readonly (number | bigint)[])[]): Seed {
-  const words = columns.map((column) => BigInt64Array.from(column, BigInt));
+  const words = columns.map(littleEndian);
   const word = (index: number) => {
     const start = fnv1a(bytesOf(`${index}${use}`), FNV_START);
-    return words.reduce((hash, column) => fnv1a(littleEndian(column), hash), start);
+    return words.reduce((hash, column) => fnv1a(column, hash), start);
   };
   const [a, b, c] = [word(0), word(1), word(2)];
   // All zero is the one state from which the generator never leaves.
@@ -68,10 +68,10 @@ export function seedOf(use: string, columns: readonly (readonly (number | bigint
 const FNV_START = 0x811c9dc5;
 const FNV_PRIME = 0x01000193;
 
-/** FNV-1a over some bytes, going on from a hash. */
-export function fnv1a(bytes: Iterable<number>, start: number = FNV_START): number {
+/** FNV-1a over some bytes, going on from a hash. By index, for it goes over all cells of a contrast. */
+export function fnv1a(bytes: ArrayLike<number>, start: number = FNV_START): number {
   let hash = start;
-  for (const byte of bytes) hash = Math.imul(hash ^ byte, FNV_PRIME);
+  for (let i = 0; i < bytes.length; i++) hash = Math.imul(hash ^ (bytes[i] as number), FNV_PRIME);
   return hash >>> 0;
 }
 
@@ -80,10 +80,10 @@ function bytesOf(text: string): number[] {
 }
 
 /** The bytes of 64-bit numbers, little end first on every machine. */
-function littleEndian(numbers: BigInt64Array): Uint8Array {
+function littleEndian(numbers: readonly (number | bigint)[]): Uint8Array {
   const view = new DataView(new ArrayBuffer(numbers.length * 8));
   numbers.forEach((value, i) => {
-    view.setBigInt64(8 * i, value, true);
+    view.setBigInt64(8 * i, BigInt(value), true);
   });
   return new Uint8Array(view.buffer);
 }

@@ -53,7 +53,7 @@ export { type QuantileArm, quantileSearch, quantilesCompared } from "./quantile-
 export { quantileRanks, type Ranks } from "./quantile-ranks.ts";
 export { answered, answeredLater, type RankSearch, type RanksAsked, type RankValues } from "./rank-search.ts";
 export { relativeByEnds } from "./relative-by-ends.ts";
-export { type Resampled, resampled } from "./resampled.ts";
+export { type Resampled, resampled, seedOfCells, type ToDraw } from "./resampled.ts";
 export { DRAWS, DRAWS_OF_SECONDARY, drawsReach, isNotDrawn, type NotDrawn } from "./resampling.ts";
 export { type Counts, counts } from "./share.ts";
 export { criticalOfSimultaneous, pOfSimultaneous } from "./simultaneous.ts";

@@ -1,7 +1,7 @@
 import type { BucketCells } from "../cells/types.ts";
 import { armsAboutBoth, tableOfBoth } from "./bucket-cells.ts";
 import { dealRows, studentised, sumRows } from "./draws.ts";
-import { generator, type Seed } from "./generator.ts";
+import { type Seed, wordsOf } from "./generator.ts";
 import { type NotDrawn, tooFew, tooManyUndefined } from "./resampling.ts";
 import type { Counts } from "./share.ts";
 
@@ -40,18 +40,23 @@ export function randomisation(
   const observed = Math.abs(t(arms));
   if (Number.isNaN(observed)) return { notDrawn: "no-spread" };
 
-  const next = generator(seed);
+  const fill = wordsOf(seed);
   const order = Uint32Array.from({ length: table.rows }, (_, row) => row);
+  const both = new Float64Array(table.width);
+  sumRows(table, order, both);
   const [units = 0, variantUnits = 0] = [arms[0], arms[arms.length / 2]];
-  const many = dealtToVariant(units, variantUnits, table.rows);
-  const [ofVariant, ofControl] = [order.subarray(0, many), order.subarray(many)];
+  const toVariant = dealtToVariant(units, variantUnits, table.rows);
+  // Only the arm with fewer buckets is dealt and added up: the other one has the rest.
+  const words = new Uint32Array(Math.min(toVariant, table.rows - toVariant));
+  const dealt = order.subarray(0, words.length);
   const sums = new Float64Array(arms.length);
-  const [controlSums, variantSums] = [sums.subarray(0, table.width), sums.subarray(table.width)];
+  const halves = [sums.subarray(0, table.width), sums.subarray(table.width)] as const;
+  const [fewer, rest] = toVariant === words.length ? [halves[1], halves[0]] : halves;
   let [reached, undefinedDeals] = [0, 0];
   for (let deal = 0; deal < deals; deal++) {
-    dealRows(order, many, next);
-    sumRows(table, ofControl, controlSums);
-    sumRows(table, ofVariant, variantSums);
+    dealRows(order, words, fill);
+    sumRows(table, dealt, fewer);
+    for (let i = 0; i < rest.length; i++) rest[i] = (both[i] as number) - (fewer[i] as number);
     const value = Math.abs(t(sums));
     if (Number.isNaN(value)) undefinedDeals++;
     // Deals that are the observed one must count, whatever the order in which they were added up.

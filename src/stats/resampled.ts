@@ -1,6 +1,6 @@
 import type { BucketCells } from "../cells/types.ts";
 import { type BootstrapT, bootstrapT } from "./bootstrap-t.ts";
-import { seedOf } from "./generator.ts";
+import { type Seed, seedOf } from "./generator.ts";
 import { normalUpperTail } from "./normal.ts";
 import { type Randomisation, randomisation } from "./randomisation.ts";
 import type { NotDrawn } from "./resampling.ts";
@@ -12,25 +12,32 @@ export interface Resampled {
   readonly randomisation: Randomisation | NotDrawn;
 }
 
-/**
- * Bootstrap-t interval at a critical value, the drawn distribution of T, and the randomisation test of one contrast.
- * @param critical on the normal's scale; its two-sided tail is the interval's alpha
- * @param draws as many deals
- * @param numbers whole numbers of both arms by bucket, which alone decide what is drawn
- * @param shares the counts of a proportion, else null
- */
-export function resampled(
-  cells: BucketCells,
-  difference: { readonly estimate: number; readonly standardError: number },
-  critical: number,
-  draws: number,
-  numbers: readonly (readonly (number | bigint)[])[],
-  shares: { readonly control: Counts; readonly variant: Counts } | null,
-): Resampled {
+/** What is to be drawn and dealt for one contrast: data alone, so that another thread can do it. */
+export interface ToDraw {
+  readonly cells: BucketCells;
+  readonly difference: { readonly estimate: number; readonly standardError: number };
+  /** On the normal's scale; its two-sided tail is the interval's alpha. */
+  readonly critical: number;
+  /** As many deals. */
+  readonly draws: number;
+  /** By `seedOfCells`. */
+  readonly seed: Seed;
+  /** The counts of a proportion, else null. */
+  readonly shares: { readonly control: Counts; readonly variant: Counts } | null;
+  /** Whether the drawn distribution is shown, at n/16 and n/4 units too. */
+  readonly isPictured: boolean;
+}
+
+/** The seed of all draws of one contrast, from whole numbers of both arms by bucket, which alone decide it. */
+export function seedOfCells(numbers: readonly (readonly (number | bigint)[])[]): Seed {
+  return seedOf("cells", numbers);
+}
+
+/** Bootstrap-t interval, the drawn distribution of T, and the randomisation test of one contrast. */
+export function resampled({ cells, difference, critical, draws, seed, shares, isPictured }: ToDraw): Resampled {
   const alpha = 2 * normalUpperTail(critical);
-  const own = seedOf("cells", numbers);
   return {
-    bootstrap: bootstrapT(cells, difference, alpha, draws, seedOf("bootstrap", [own]), shares),
-    randomisation: randomisation(cells, draws, seedOf("randomisation", [own]), shares),
+    bootstrap: bootstrapT(cells, difference, alpha, draws, seedOf("bootstrap", [seed]), shares, isPictured),
+    randomisation: randomisation(cells, draws, seedOf("randomisation", [seed]), shares),
   };
 }

@@ -1,7 +1,7 @@
 import path from "node:path";
 import { decisionReport } from "../compute.ts";
 import { type ReduceOptions, UnusableLog } from "../engine/index.ts";
-import { judged } from "../judge.ts";
+import { drawn, judged } from "../judge.ts";
 import { measuredFrom, throughCells, withoutBuckets } from "../kept/file.ts";
 import { cellsAt, misfit } from "../kept/from-file.ts";
 import { type Measured, measure } from "../measure.ts";
@@ -48,7 +48,7 @@ export async function madeAgain(file: string, given: Given, options: VerifyOptio
     };
   }
   return options.cells === true
-    ? fromCells(file, given, loaded.plan, previous)
+    ? fromCells(file, given, loaded.plan, previous, options)
     : fromLog(file, given, loaded.plan, loaded.source, previous, options);
 }
 
@@ -74,9 +74,10 @@ async function fromLog(
       return { status: 2, text: placeProblems(source, "the plan in the report", whole.problems) };
     }
     const measured = fromCells ? await throughCells(plan, planText, whole, judged(plan, whole)) : whole;
-    const now = { plan, planText, planFolder, measured, judged: judged(plan, measured), fromCells };
+    const found = await drawn(judged(plan, measured), options);
+    const now = { plan, planText, planFolder, measured, judged: found, fromCells };
     const rerun = previous === null ? null : await rerunOf(previous, now, options);
-    const files = await decisionReport(plan, planText, measured, now.judged, rerun, fromCells);
+    const files = await decisionReport(plan, planText, measured, found, rerun, fromCells);
     return { files, from: logWords(measured) };
   } catch (error) {
     if (!(error instanceof UnusableLog)) throw error;
@@ -89,6 +90,7 @@ async function fromCells(
   given: Given,
   plan: Plan,
   previous: PreviousReport | null,
+  options: VerifyOptions,
 ): Promise<Made | Verified> {
   const beside = path.join(path.dirname(file), "cells.json");
   const cells = await cellsAt(beside);
@@ -106,7 +108,7 @@ async function fromCells(
     planText: given.planText,
     planFolder: "",
     measured,
-    judged: judged(plan, measured),
+    judged: await drawn(judged(plan, measured), options),
     fromCells: true,
   };
   const rerun = previous === null ? null : { ...(await rerunOf(previous, now, {})), steps: cells.steps };

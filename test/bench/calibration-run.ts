@@ -96,7 +96,8 @@ function countIntervals(tally: Tally, c: SimulatedArm, t: SimulatedArm, truth: n
 function countBootstrap(tally: Tally, c: SimulatedArm, t: SimulatedArm, truth: number, numbers: number[]): void {
   const [estimate, standardError] = [t.mean - c.mean, Math.sqrt(t.variance + c.variance)];
   const cells = { kind: "mean", control: c.buckets, variant: t.buckets } as const;
-  const found = bootstrapT(cells, { estimate, standardError }, ALPHA, DRAWS, seedOf("bootstrap", [numbers]), null);
+  const seed = seedOf("bootstrap", [numbers]);
+  const found = bootstrapT(cells, { estimate, standardError }, ALPHA, DRAWS, seed, null, false);
   if (isNotDrawn(found)) return;
   tally.bootstrapped++;
   count(tally.bootstrap, found.low, found.high, truth);

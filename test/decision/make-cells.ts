@@ -1,6 +1,6 @@
 import { arms as armsOf } from "../../src/cells/index.ts";
 import type { Arm } from "../../src/cells/types.ts";
-import { adjustedPairs, type Effect, effects, type Pair } from "../../src/decision/index.ts";
+import { adjustedPairs, type Effect, effects, type Pair, withDraws } from "../../src/decision/index.ts";
 import type { AdjustedRequest, MetricCells, Reduction, ScoreTable } from "../../src/engine/index.ts";
 import type { Metric, Plan } from "../../src/plan/types.ts";
 import { cellTable, type PairUnit, pairTables, scoreTable, type Unit } from "../cells/tables.ts";
@@ -31,7 +31,7 @@ function scoresOf(units: readonly PairUnit[]): Unit[] {
   });
 }
 
-/** The effects of a plan with one metric, the engine's session played by hand. */
+/** The effects of a plan with one metric, drawn too, the engine's session played by hand. */
 export async function effectsOfUnits(plan: Plan, units: readonly PairUnit[]): Promise<Effect[]> {
   const reduction = reductionOfUnits(plan, units);
   const pairs = await pairsOfUnits(plan, reduction, units);
@@ -40,7 +40,7 @@ export async function effectsOfUnits(plan: Plan, units: readonly PairUnit[]): Pr
     if (cells === undefined) throw new Error(`no cells for ${metric.name}`);
     return armsOf(metric, cells, plan.variants.length);
   });
-  return effects(plan, arms, reduction, pairs);
+  return withDraws(effects(plan, arms, reduction, pairs));
 }
 
 export function pairsOfUnits(plan: Plan, reduction: Reduction, units: readonly PairUnit[]): Promise<Pair[]> {

@@ -86,6 +86,7 @@ export function effectOf(metric: Metric, contrast: Contrast, variant = "calendar
     power: NO_POWER,
     normality: null,
     resampled: null,
+    toDraw: null,
   };
 }
 

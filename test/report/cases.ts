@@ -38,6 +38,7 @@ export function effectOf(metric: Metric, variant: string, contrast: Contrast, zo
     power: NO_POWER,
     normality: null,
     resampled: null,
+    toDraw: null,
   };
 }
 

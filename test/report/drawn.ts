@@ -2,7 +2,7 @@ import { type ContrastFigures, checks } from "../../src/checks/index.ts";
 import type { Effect } from "../../src/decision/index.ts";
 import type { ReportInputs } from "../../src/report/types.ts";
 import { generator } from "../../src/stats/generator.ts";
-import { DRAWS_OF_SECONDARY, type Normality, type Resampled, resampled } from "../../src/stats/index.ts";
+import { DRAWS_OF_SECONDARY, type Normality, type Resampled, resampled, seedOfCells } from "../../src/stats/index.ts";
 import type { Contrast } from "../../src/stats/types.ts";
 import { meanCells } from "../stats/buckets.ts";
 import { adopt } from "./cases.ts";
@@ -14,7 +14,15 @@ function drawn(control: number, variant: number, { difference }: Contrast): Resa
   const cells = meanCells(values(control), values(variant));
   const { estimate, standardError } = difference;
   if (estimate === null || standardError === null) throw new Error("nothing to draw for");
-  return resampled(cells, { estimate, standardError }, 1.96, DRAWS_OF_SECONDARY, [[control, variant]], null);
+  return resampled({
+    cells,
+    difference: { estimate, standardError },
+    critical: 1.96,
+    draws: DRAWS_OF_SECONDARY,
+    seed: seedOfCells([[control, variant]]),
+    shares: null,
+    isPictured: true,
+  });
 }
 
 function tails(lower: number, upper: number, level: Normality["tails"]["level"]): Normality["tails"] {

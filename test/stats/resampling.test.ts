@@ -134,6 +134,12 @@ describe("the bootstrap-t interval", () => {
     expect(lean[2]).toBeGreaterThan(0);
   });
 
+  it("is the same without its pictures, which cost draws of their own", () => {
+    const cells = meanCells(skewed(400, 5), skewed(320, 6));
+    const bare = bootstrapT(cells, { estimate: 0, standardError: 1 }, 0.05, 1000, SEED, null, false);
+    expect(bare).toEqual({ ...interval(cells), drawn: [] });
+  });
+
   it("has no picture where an arm would have under 20 units", () => {
     const has = ({ drawn: pictures }: BootstrapT) => pictures.map(({ histogram }) => histogram !== null);
     expect(has(interval(meanCells(skewed(400, 5), skewed(320, 6))))).toEqual([true, true, true]);

@@ -1,0 +1,35 @@
+import { existsSync } from "node:fs";
+import { availableParallelism } from "node:os";
+import { Tinypool } from "tinypool";
+import { type Resampled, resampled, type ToDraw } from "./stats/index.ts";
+
+export interface DrawOptions {
+  /** At most so many; without it one for each processor. */
+  readonly threads?: number | undefined;
+  readonly signal?: AbortSignal | undefined;
+}
+
+/** Fewer draws than this in all are made sooner than threads have started. */
+const MANY = 40_000;
+
+// There once it is compiled. Run from its source, or bundled into another program, the draws are made here.
+const WORKER = new URL("./stats/resampled.js", import.meta.url);
+
+/**
+ * Gives `use` a function that draws, in threads where there is much to draw. What is drawn is a function of its argument, so
+ * it is the same in any thread.
+ */
+export async function withDrawers<Of>(
+  toDraw: readonly (ToDraw | null)[],
+  { threads = availableParallelism(), signal }: DrawOptions,
+  use: (draw: (toDraw: ToDraw) => Resampled | Promise<Resampled>) => Promise<Of>,
+): Promise<Of> {
+  const draws = toDraw.reduce((sum, of) => sum + (of?.draws ?? 0), 0);
+  if (draws < MANY || threads < 2 || !existsSync(WORKER)) return use(resampled);
+  const pool = new Tinypool({ filename: WORKER.href, minThreads: threads, maxThreads: threads });
+  try {
+    return await use((of) => pool.run(of, { name: resampled.name, ...(signal === undefined ? {} : { signal }) }));
+  } finally {
+    await pool.destroy();
+  }
+}
