@@ -1,4 +1,4 @@
-import { parse, resetSVGDefIds, View } from "vega";
+import { parse, type Runtime, resetSVGDefIds, View } from "vega";
 import { compile, type TopLevelSpec } from "vega-lite";
 
 import { withoutControls } from "../typeset.ts";
@@ -19,9 +19,13 @@ export interface DrawingText {
  * fixed sizes are gone (the page gives the width). The same specification gives the same bytes.
  */
 export async function draw(spec: TopLevelSpec, id: string, text: DrawingText | null): Promise<Drawing> {
-  const { spec: vega } = compile(spec, { logger: strictLogger });
+  const { runtime, rows } = compiledOf(spec);
   resetSVGDefIds();
-  const svg = await new View(parse(vega), { renderer: "none" }).toSVG();
+  const view = new View(runtime, { renderer: "none" });
+  rows.forEach((values, i) => {
+    view.data(dataName(i), values);
+  });
+  const svg = await view.toSVG();
   const inside = /^<svg [^>]*viewBox="([^"]*)"[^>]*>(.*)<\/svg>$/s.exec(svg);
   const [, viewBox, content] = inside ?? [];
   if (viewBox === undefined || content === undefined) throw new Error(`the drawing ${id} is not one svg element`);
@@ -34,6 +38,34 @@ export async function draw(spec: TopLevelSpec, id: string, text: DrawingText | n
   return {
     svg: `<svg viewBox="${viewBox}" role="img" aria-labelledby="${id}-title ${id}-desc">${words}${own}</svg>`,
   };
+}
+
+const compiledBefore = new Map<string, Runtime>();
+/** More than the shapes of one report. */
+const MOST_KEPT = 500;
+
+/**
+ * Drawings of one shape differ in their rows alone, and to compile one takes most of the time of drawing it: so the rows
+ * are taken out, and each shape is compiled once.
+ */
+function compiledOf(spec: TopLevelSpec): { readonly runtime: Runtime; readonly rows: readonly object[][] } {
+  const rows: object[][] = [];
+  const shape = JSON.stringify(spec, (key, value) => {
+    if (key !== "data" || !Array.isArray(value?.values)) return value;
+    // the view marks the rows that it is given as its own
+    rows.push(structuredClone(value.values));
+    return { name: dataName(rows.length - 1) };
+  });
+  const before = compiledBefore.get(shape);
+  if (before !== undefined) return { runtime: before, rows };
+  const runtime = parse(compile(JSON.parse(shape), { logger: strictLogger }).spec);
+  if (compiledBefore.size >= MOST_KEPT) compiledBefore.clear();
+  compiledBefore.set(shape, runtime);
+  return { runtime, rows };
+}
+
+function dataName(index: number): string {
+  return `rows-${index}`;
 }
 
 /** A warning means that the drawing is not the one that was meant: it is a mistake of ours, never only noise. */
