@@ -1,6 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
 import type { Interval } from "../../words/index.ts";
-import { at, type ForestAxis, type ForestRow, forestAxis, forestStrip, type Layer } from "./forest.ts";
+import { type ForestAxis, type ForestRow, forestAxis, forestStrip, type Layer, upright } from "./forest.ts";
 import { theme } from "./theme.ts";
 
 /** One choice of the figure: its interval, and whether it is the plan's own. */
@@ -28,10 +28,7 @@ export function choiceStrip(
 }
 
 function dotted(planned: number, axis: ForestAxis): Layer {
-  return {
-    mark: { type: "rule", color: theme.line, strokeWidth: 1, strokeDash: [1, 3] },
-    encoding: { x: at(planned, axis) },
-  };
+  return upright({ type: "rule", color: theme.line, strokeWidth: 1, strokeDash: [1, 3] }, planned, axis);
 }
 
 function rowOf({ interval, isPlanned }: ChoiceMark, mark: number | null): ForestRow {

@@ -1,5 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
 import type { Relative } from "../../stats/types.ts";
+import { pixels } from "./frame.ts";
 import { type LineStyle, theme } from "./theme.ts";
 import { roundTicks } from "./ticks.ts";
 
@@ -58,7 +59,7 @@ function withTicks(from: number, to: number): ForestAxis {
  * @param behind what else runs through every row, drawn under its marks
  */
 export function forestStrip(row: ForestRow | null, axis: ForestAxis, behind: readonly Layer[] = []): TopLevelSpec {
-  const zero: Layer = { mark: { type: "rule", color: theme.line, strokeWidth: 1 }, encoding: { x: at(0, axis) } };
+  const zero = upright({ type: "rule", color: theme.line, strokeWidth: 1 }, 0, axis);
   return { ...frame(HEIGHT), layer: [zero, ...behind, ...(row === null ? [] : rowMarks(row, axis))] };
 }
 
@@ -69,18 +70,17 @@ function rowMarks({ relative, mark, style }: ForestRow, axis: ForestAxis): Layer
   const from = Math.min(Math.max(relative.low ?? axis.low, axis.low), axis.high - stub);
   const to = Math.max(Math.min(relative.high ?? axis.high, axis.high), axis.low + stub);
   const line: Layer = {
+    data: { values: [{ from: at(from, axis), to: at(to, axis) }] },
     mark: { type: "rule", color: theme.ink, strokeWidth: 1.5, strokeDash: [...style.dash] },
-    encoding: { x: at(from, axis), x2: { datum: to }, y: { value: MIDDLE } },
+    encoding: { x: pixels("from"), x2: { field: "to" }, y: { value: MIDDLE } },
   };
   const marks: Layer[] = [line];
   if (mark !== null && inside(mark)) {
-    marks.unshift({
-      mark: { type: "rule", color: theme.ink, strokeWidth: 1.5 },
-      encoding: { x: at(mark, axis), y: { value: MIDDLE - TICK }, y2: { value: MIDDLE + TICK } },
-    });
+    marks.unshift(upright({ type: "rule", color: theme.ink, strokeWidth: 1.5 }, mark, axis, TICK));
   }
   if (inside(relative.estimate)) {
     marks.push({
+      data: { values: [{ at: at(relative.estimate, axis) }] },
       mark: {
         type: "point",
         shape: "square",
@@ -91,18 +91,31 @@ function rowMarks({ relative, mark, style }: ForestRow, axis: ForestAxis): Layer
         stroke: theme.ink,
         strokeWidth: 1,
       },
-      encoding: { x: at(relative.estimate, axis), y: { value: MIDDLE } },
+      encoding: { x: pixels("at"), y: { value: MIDDLE } },
     });
   }
   return marks;
 }
 
-/** A place on the axis that all rows share. */
-export function at(datum: number, axis: ForestAxis) {
-  return { datum, type: "quantitative", axis: null, title: null, scale: scaleOf(axis) } as const;
+interface RuleMark {
+  readonly type: "rule";
+  readonly color: string;
+  readonly strokeWidth: number;
+  readonly strokeDash?: number[];
 }
-function scaleOf(axis: ForestAxis) {
-  return { domain: [axis.low, axis.high], zero: false, nice: false };
+
+/** An upright line, as high as the drawing or by so much above and below its middle. */
+export function upright(mark: RuleMark, value: number, axis: ForestAxis, reach = MIDDLE): Layer {
+  return {
+    data: { values: [{ at: at(value, axis) }] },
+    mark,
+    encoding: { x: pixels("at"), y: { value: MIDDLE - reach }, y2: { value: MIDDLE + reach } },
+  };
+}
+
+/** A place on the axis that all rows share, in pixels: so all rows have one shape, which is compiled once. */
+function at(value: number, { low, high }: ForestAxis): number {
+  return ((value - low) / (high - low)) * WIDTH;
 }
 
 /** The axis below the rows, in percent of the control's level; `label` writes a tick. */
@@ -110,6 +123,7 @@ export function forestScale(axis: ForestAxis, label: (tick: number) => string): 
   const labels = Object.fromEntries(axis.ticks.map((tick) => [String(tick), label(tick)]));
   return {
     ...frame(AXIS_HEIGHT),
+    data: { values: [{}] },
     mark: { type: "rule", color: theme.line, strokeWidth: 1 },
     encoding: {
       y: { value: 0 },
@@ -117,7 +131,7 @@ export function forestScale(axis: ForestAxis, label: (tick: number) => string): 
       x: {
         datum: 0,
         type: "quantitative",
-        scale: scaleOf(axis),
+        scale: { domain: [axis.low, axis.high], zero: false, nice: false },
         axis: {
           orient: "bottom",
           offset: 1 - AXIS_HEIGHT,
@@ -145,7 +159,6 @@ function frame(height: number) {
     padding: 0,
     autosize: "none",
     background: "transparent",
-    data: { values: [{}] },
     config: { aria: false, view: { stroke: null } },
   } as const;
 }
