@@ -52,7 +52,7 @@ export { type DaysSince, daysSince, type Trend } from "./since-enrolment.ts";
 // the size of a test to come, without any data
 export { levelAt, type SizeAnswer, type SizeQuestion, sizeAhead } from "./size-ahead.ts";
 // the effect by subgroup
-export { heterogeneitySentence, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
+export { heterogeneitySentence, levelHead, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
 export { type Subgroup, type SubgroupLevel, subgroups, UNITS_FOR_LEVEL } from "./subgroups.ts";
 // what would change the conclusion
 export { type Turn, whatWouldChange } from "./turning.ts";

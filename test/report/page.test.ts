@@ -70,6 +70,20 @@ describe.each(everyCase)("the page of the case %s", async (name, inputs) => {
     expect(textOf(html)).not.toMatch(/\bNaN\b|\bundefined\b|\bnull\b|\[object|Infinity/);
   });
 
+  // "whose interval excludes no difference": no difference is excluded, or that of zero is
+  it('says zero, where "no difference" after a verb could be read two ways', () => {
+    expect(textOf(html)).not.toMatch(
+      /no difference (lies|stands)|(exclud|touch|hold|leave|above|below|of)\w* no difference/i,
+    );
+  });
+
+  // "calendar" of the log stood as "Calendar" in titles: another value, where a log has both
+  it("shows the name of a variant as it is, at the head of a sentence too", () => {
+    const names = inputs.plan.variants.map((variant) => variant.name).filter((own) => /^[a-z]+$/.test(own));
+    const capitals = names.map((own) => `${own[0]?.toUpperCase()}${own.slice(1)}`);
+    expect(textOf(html).match(new RegExp(`\\b(${["Nobody", ...capitals].join("|")})\\b`))?.[0]).toBeUndefined();
+  });
+
   it("repeats to the byte", async () => {
     expect((await renderReport(inputs)).files).toEqual((await renderReport(inputs)).files);
     expect(name).not.toBe("");
