@@ -4,7 +4,8 @@ import path from "node:path";
 const FIGURES = "figures";
 const ALONE = ["page-one.html", "decision.csv"];
 /** What `--figures` names, and nothing else that may lie in a folder called figures. */
-const OURS = /^(forest|flow|(allocation|shape|sampling|choices|accrual|days|subgroup|afterwards)-\d+)\.svg$/;
+const OURS =
+  /^(forest|flow|before-after|(allocation|shape|sampling|choices|accrual|days|subgroup|afterwards)-\d+)\.svg$/;
 
 /** The files of an earlier `--figures` that lie in a report's folder. */
 export async function lyingExtras(folder: string): Promise<string[]> {

@@ -9,6 +9,7 @@ import { adopt, notSettled, several, undecidable } from "./cases.ts";
 import { everyCase } from "./every.ts";
 import { grouped } from "./groups.ts";
 import { tagsOf, textOf } from "./markup.ts";
+import { secondRun } from "./rerun-case.ts";
 
 async function extrasOf(inputs: typeof adopt): Promise<Map<string, string>> {
   return new Map((await renderReport(inputs)).extras().map(({ name, text }) => [name, text]));
@@ -25,6 +26,20 @@ describe.each(everyCase)("what --figures adds to the report of the case %s", asy
     expect(files.has("figures/forest.svg")).toBe(
       inputs.conclusion.decision !== "undecidable" && inputs.effects.length > 0,
     );
+  });
+
+  it("has the estimates before and after, where the report replaces one", () => {
+    expect(files.has("figures/before-after.svg")).toBe(inputs.rerun !== undefined);
+  });
+
+  // a figure goes where the sentence at the head of its section does not follow
+  it("says in every figure of an effect that it is not for deciding, where nothing can be decided", () => {
+    const ofEffects = svgs.filter(([file]) => !/(flow|allocation|shape)/.test(file));
+    for (const [file, svg] of ofEffects) {
+      expect(textOf(svg).includes("for finding the fault, not for deciding"), file).toBe(
+        inputs.conclusion.decision === "undecidable",
+      );
+    }
   });
 
   it.each(svgs)("gives %s as one drawing that asks for nothing and runs nothing", (_name, svg) => {
@@ -74,6 +89,16 @@ describe("the figures of days and subgroups", async () => {
     }
     expect(textOf(get(files, "figures/subgroup-1.svg"))).toContain("Does not point against the whole.");
     expect(textOf(get(files, "figures/days-1.svg"))).toContain("days since enrolment");
+  });
+});
+
+describe("the estimates before and after, as a file,", () => {
+  it("name each run, and stand one above the other with their intervals", async () => {
+    const svg = textOf(get(await extrasOf(secondRun), "figures/before-after.svg"));
+    expect(svg).toMatch(
+      /Booked \+10\.8% \(\+7\.3% to \+14\.4%\) first run Booked \+10\.0% \(\+6\.5% to \+13\.7%\) now/,
+    );
+    expect(svg).toContain("Upper line of each pair, dashed: the first run.");
   });
 });
 
