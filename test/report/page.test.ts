@@ -12,7 +12,7 @@ const TAGS = new Set(
    svg g path line text title desc`.split(/\s+/),
 );
 const ATTRIBUTES = new Set(
-  `lang charset name content class href id aria-labelledby aria-hidden role scope tabindex
+  `lang charset name content class href id aria-labelledby aria-hidden role scope colspan tabindex
    viewbox focusable fill stroke stroke-miterlimit stroke-width stroke-dasharray transform d x2 y2 opacity display
    text-anchor font-family font-size html`.split(/\s+/),
 );
