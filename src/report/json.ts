@@ -5,8 +5,9 @@ import { changesJson } from "./changes/changes.ts";
 import { twelveDigits } from "./digits.ts";
 import { flowJson } from "./flow.ts";
 import { accrualJson, sinceEnrolmentJson, subgroupJson } from "./groups-json.ts";
+import type { CheckJson, EffectJson, ReportJson, SensitivityJson } from "./json-types.ts";
 import { provenanceJson } from "./provenance.ts";
-import type { CheckJson, EffectJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
+import type { ReportInputs } from "./types.ts";
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
 export function reportJson(inputs: ReportInputs): ReportJson {
