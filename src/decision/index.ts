@@ -22,7 +22,7 @@ export { controlOf, effects } from "./effects.ts";
 export { incidentSentences, incidentsInShort } from "./incident-words.ts";
 export { type IncidentOutcome, incidentOutcomes } from "./incidents.ts";
 // planned looks
-export { atThisLook } from "./looks.ts";
+export { atThisLook, lookAccount } from "./looks.ts";
 export { lookSentences } from "./looks-words.ts";
 // which interval of an effect a reader sees, and what the plan asks in words
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";

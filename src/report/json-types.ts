@@ -15,6 +15,8 @@ export interface ReportJson {
     readonly sentence: string;
     readonly reasons: readonly string[];
   };
+  /** Null where the plan has no looks. */
+  readonly looks: LooksJson | null;
   readonly flow: FlowJson;
   readonly checks: readonly CheckJson[];
   readonly effects: readonly EffectJson[];
@@ -29,6 +31,29 @@ export interface ReportJson {
   } | null;
   readonly changes: ChangesJson | null;
   readonly provenance: ReportProvenanceJson;
+}
+
+/** Interim looks as the plan states them, and this one. */
+export interface LooksJson {
+  /** Shares of the planned size. */
+  readonly planned: readonly number[];
+  readonly spending: "obrien-fleming" | "pocock";
+  /** This look's number, from 1. */
+  readonly at: number;
+  /** Analysed of planned units; null where the plan states no size. */
+  readonly reached: number | null;
+  /** At which the looks so far count; this one's is the last. */
+  readonly shares: readonly number[];
+  /** Of each metric that decides or must not get worse, for each of its intervals. */
+  readonly metrics: readonly {
+    readonly metric: string;
+    /** Two-sided, all looks together. */
+    readonly alpha: number;
+    /** The critical value of this look, on the normal's scale. */
+    readonly boundary: number;
+    /** Of alpha, by this look. */
+    readonly spent: number;
+  }[];
 }
 
 export interface FlowJson {

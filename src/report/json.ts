@@ -1,5 +1,5 @@
 import type { Check } from "../checks/types.ts";
-import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
+import { type Choices, type ContrastNormality, type Effect, lookAccount } from "../decision/index.ts";
 import type { Contrast } from "../stats/types.ts";
 import { changesJson } from "./changes/changes.ts";
 import { twelveDigits } from "./digits.ts";
@@ -21,6 +21,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
       sentence: conclusion.sentence,
       reasons: conclusion.reasons,
     },
+    looks: lookAccount(plan),
     flow: flowJson(plan, reduction),
     checks: inputs.checks.map(checkJson),
     effects: inputs.effects.map(effectJson),

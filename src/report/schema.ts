@@ -2,7 +2,7 @@ import { z } from "zod";
 import { changesSchema } from "./changes/schema.ts";
 import { effect, sensitivity } from "./schema-effects.ts";
 import { accrual, sinceEnrolment, subgroup } from "./schema-groups.ts";
-import { count, decision, fingerprint, numberOrNull, outcome } from "./schema-values.ts";
+import { count, decision, fingerprint, numberOrNull, outcome, share } from "./schema-values.ts";
 
 const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
@@ -53,6 +53,29 @@ export const provenanceSchema = z.strictObject({
   engine: z.strictObject({ name: z.string(), version: z.string() }),
 });
 
+const looks = z
+  .strictObject({
+    planned: z.array(share).describe("Shares of the planned size, rising; the last is 1."),
+    spending: z.enum(["obrien-fleming", "pocock"]),
+    at: count.describe("This look's number, from 1."),
+    reached: numberOrNull.describe("Analysed of planned units; null where the plan states no size."),
+    shares: z
+      .array(count)
+      .describe("Of the planned size, at which the looks so far count: earlier ones as planned, the last is this one."),
+    metrics: z
+      .array(
+        z.strictObject({
+          metric: z.string(),
+          alpha: share.describe("Two-sided, of one interval, all looks together."),
+          boundary: count.describe("The interval is estimate -+ boundary x standard error, on the normal's scale."),
+          spent: share.describe("Of alpha, by this look."),
+        }),
+      )
+      .describe("What decides or must not get worse, for each of its intervals."),
+  })
+  .nullable()
+  .describe("Planned interim looks; null where the plan has none.");
+
 /** report.json (DESIGN 7) as a schema: keys of the contract are closed, only a check's figures are open. */
 export const reportSchema = z.strictObject({
   format: z.literal(1),
@@ -63,6 +86,7 @@ export const reportSchema = z.strictObject({
     sentence: z.string(),
     reasons: z.array(z.string()),
   }),
+  looks,
   flow: flowSchema,
   checks: z.array(checkSchema),
   effects: z.array(effect),
