@@ -7,7 +7,6 @@ import { drawn, judged } from "./judge.ts";
 import { measuredFromFile } from "./kept/from-file.ts";
 import { measure } from "./measure.ts";
 import { planJsonSchema } from "./plan/index.ts";
-import { keepExtras } from "./report/extras.ts";
 import { openFolder } from "./report/folder.ts";
 import { type ReportJson, reportJsonSchema } from "./report/index.ts";
 import { replacedReport } from "./rerun.ts";
@@ -92,8 +91,8 @@ export async function closeout(planPath: string, options: CloseoutOptions = {}):
       const rerun = replaced.previous === null ? null : await rerunOf(replaced.previous, now, options);
       const rendered = await decisionReport(plan, planText, found, judgement, rerun, fromCells);
       options.signal?.throwIfAborted();
-      const kept = await folder.keep(rendered.files, replaced.history);
-      const written = [...kept, ...(await keepExtras(folder.path, options.figures === true ? rendered.extras() : []))];
+      const extras = options.figures === true ? rendered.extras() : [];
+      const written = await folder.keep([...rendered.files, ...extras], replaced.history);
       const terminal = rendered.terminal({
         report: path.join(folder.shown, "report.html"),
         summary: path.join(folder.shown, "summary.md"),

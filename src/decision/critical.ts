@@ -11,7 +11,7 @@ import {
   pOfSimultaneous,
 } from "../stats/index.ts";
 import { alphaOf } from "./alpha.ts";
-import { looksAsPlanned, looksSoFar, pAtLook } from "./looks.ts";
+import { alphaAtLooks, looksAsPlanned, looksSoFar, pAtLook } from "./looks.ts";
 
 /** The variances of the levels that the contrasts of one metric compare; the variants in plan order. */
 export interface Variances {
@@ -28,7 +28,7 @@ export function criticalOf(plan: Plan, metric: Metric, { control, variants }: Va
   const alpha = alphaOf(plan, metric);
   if (metric.role === "secondary") return normalCritical(alpha);
   const looks = looksSoFar(plan);
-  if (looks !== null) return lookCritical(looks, alpha / variants.length);
+  if (looks !== null) return lookCritical(looks, alphaAtLooks(plan, metric));
   if (metric.summary === "quantile") return bonferroniCritical(alpha, variants.length);
   return criticalOfSimultaneous(control, variants, alpha);
 }
@@ -47,7 +47,7 @@ export function pOfVariants(plan: Plan, metric: Metric, p: number, { control, va
 export function criticalAtEnd(plan: Plan, metric: Metric, critical: number): number {
   const looks = looksAsPlanned(plan);
   if (looks === null || metric.role === "secondary") return critical;
-  return lookCritical(looks, alphaOf(plan, metric) / (plan.variants.length - 1));
+  return lookCritical(looks, alphaAtLooks(plan, metric));
 }
 
 /** A variance that does not exist counts as 0: the critical value is Bonferroni's then, and holds whatever is missing. */

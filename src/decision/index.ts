@@ -22,7 +22,7 @@ export { controlOf, effects } from "./effects.ts";
 export { incidentSentences, incidentsInShort } from "./incident-words.ts";
 export { type IncidentOutcome, incidentOutcomes } from "./incidents.ts";
 // planned looks
-export { atThisLook } from "./looks.ts";
+export { atThisLook, lookAccount } from "./looks.ts";
 export { lookSentences } from "./looks-words.ts";
 // which interval of an effect a reader sees, and what the plan asks in words
 export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
@@ -54,7 +54,7 @@ export { type DaysSince, daysSince, type Trend } from "./since-enrolment.ts";
 // the size of a test to come, without any data
 export { levelAt, type SizeAnswer, type SizeQuestion, sizeAhead } from "./size-ahead.ts";
 // the effect by subgroup
-export { heterogeneitySentence, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
+export { heterogeneitySentence, levelHead, levelSentence, levelText, ofLevel } from "./subgroup-words.ts";
 export { type Subgroup, type SubgroupLevel, subgroups, UNITS_FOR_LEVEL } from "./subgroups.ts";
 // what would change the conclusion
 export { type Turn, whatWouldChange } from "./turning.ts";

@@ -1,8 +1,7 @@
 import type { Plan } from "../plan/types.ts";
 import { lookCritical, normalCritical } from "../stats/index.ts";
 import { count, percent, planPercent } from "../words/index.ts";
-import { alphaOf } from "./alpha.ts";
-import { isInterim, looksSoFar } from "./looks.ts";
+import { alphaAtLooks, isInterim, looksSoFar } from "./looks.ts";
 import type { Conclusion } from "./types.ts";
 
 /** What page one says of planned looks: which one this is, what it costs, and before the last that it exaggerates. */
@@ -38,7 +37,7 @@ function widening(plan: Plan): number | null {
   const looks = looksSoFar(plan);
   const primary = plan.metrics.find(({ role }) => role === "primary");
   if (looks === null || primary === undefined) return null;
-  const alpha = alphaOf(plan, primary) / (plan.variants.length - 1);
+  const alpha = alphaAtLooks(plan, primary);
   return lookCritical(looks, alpha) / normalCritical(alpha);
 }
 

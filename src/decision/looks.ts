@@ -1,6 +1,7 @@
 import type { Reduction } from "../engine/types.ts";
-import type { Plan } from "../plan/types.ts";
-import { type Looks, pOfLooks } from "../stats/index.ts";
+import type { Metric, Plan } from "../plan/types.ts";
+import { alphaSpent, type Looks, lookCritical, pOfLooks } from "../stats/index.ts";
+import { alphaOf } from "./alpha.ts";
 import { analysedUnits } from "./analysed.ts";
 
 /** Planned interim looks (METHODS 5): what they make of the critical values, and of p. */
@@ -29,6 +30,43 @@ export function looksSoFar({ looks }: Plan): Looks | null {
   const isBeyond = share >= (before.at(-1) ?? 0) + APART;
   const earlier = isBeyond ? before : before.map((other) => (other / own) * share);
   return { shares: [...earlier, share], spending, isLast: at === planned.length };
+}
+
+/** The planned looks and what this one has of them. */
+export interface LookAccount extends NonNullable<Plan["looks"]> {
+  /** Of the planned size, at which the looks so far count; this one's is the last. */
+  readonly shares: readonly number[];
+  /** Of each metric that decides or must not get worse. */
+  readonly metrics: readonly {
+    readonly metric: string;
+    /** Two-sided, of each of its intervals and all looks together. */
+    readonly alpha: number;
+    /** How many standard errors its intervals reach at this look. */
+    readonly boundary: number;
+    /** Of its alpha, by this look. */
+    readonly spent: number;
+  }[];
+}
+
+/** Null where the plan has no looks. */
+export function lookAccount(plan: Plan): LookAccount | null {
+  const soFar = looksSoFar(plan);
+  if (plan.looks === null || soFar === null) return null;
+  return {
+    ...plan.looks,
+    shares: soFar.shares,
+    metrics: plan.metrics
+      .filter(({ role }) => role !== "secondary")
+      .map((metric) => {
+        const alpha = alphaAtLooks(plan, metric);
+        return { metric: metric.name, alpha, boundary: lookCritical(soFar, alpha), spent: alphaSpent(soFar, alpha) };
+      }),
+  };
+}
+
+/** alpha of each interval of a metric under planned looks: shared out evenly over the variants. */
+export function alphaAtLooks(plan: Plan, metric: Metric): number {
+  return alphaOf(plan, metric) / (plan.variants.length - 1);
 }
 
 /** All looks as planned: what a test like this one, run to its end, is judged by. */

@@ -1,7 +1,7 @@
 import type { Level } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { isAbsent } from "../stats/index.ts";
-import { fixed, plural, pText, quoted } from "../words/index.ts";
+import { capital, fixed, plural, pText, quoted } from "../words/index.ts";
 import { because } from "./absent.ts";
 import type { Subgroup, SubgroupLevel } from "./subgroups.ts";
 import { told } from "./told.ts";
@@ -19,6 +19,11 @@ export function levelText(level: Level): string {
     default:
       return unknown(level);
   }
+}
+
+/** A level at the head of its row: a value of the log as it is, our own words with a capital. */
+export function levelHead(level: Level): string {
+  return level.kind === "value" ? level.text : capital(levelText(level));
 }
 
 /** What a level says, one sentence: "DE": 9.1% more (95% interval: …), not against the whole. */

@@ -1,4 +1,4 @@
-import type { EffectJson } from "./types.ts";
+import type { EffectJson } from "./json-types.ts";
 
 type Cell = string | number | null;
 

@@ -1,8 +1,8 @@
 import { nanoNumber } from "../engine/nano.ts";
 import type { ByVariant, Reduction } from "../engine/types.ts";
 import type { Plan } from "../plan/types.ts";
+import type { FlowJson } from "./json-types.ts";
 import { rowLine, unitLine } from "./ledger.ts";
-import type { FlowJson } from "./types.ts";
 
 /** The flow of units, the ledger of rows and that of each metric's rows, as DESIGN 7 lays them down. */
 export function flowJson(plan: Plan, reduction: Omit<Reduction, "metrics" | "groups">): FlowJson {

@@ -2,6 +2,7 @@ import { renameSync } from "node:fs";
 import { copyFile, mkdir, mkdtemp, readdir, readFile, rm, stat, writeFile } from "node:fs/promises";
 import os from "node:os";
 import path from "node:path";
+import { lyingExtras } from "./extra-names.ts";
 import { HISTORY, keptReport } from "./history.ts";
 import { putInPlace } from "./in-place.ts";
 
@@ -19,13 +20,18 @@ export interface ReportFolder {
   kept(sha256: string): Promise<string | null>;
   /** Where a file of this run is written until keep(). */
   staged(file: string): string;
-  /** Writes the other files and puts all of them in place, what is to be kept into history/ first; gives the files' paths. */
-  keep(
-    files: readonly { readonly name: string; readonly text: string }[],
-    history?: readonly Kept[],
-  ): Promise<string[]>;
+  /**
+   * Writes the other files and puts all of them in place, what is to be kept into history/ first; gives the files' paths.
+   * What an earlier `--figures` left belongs to its report.json, and goes with it.
+   */
+  keep(files: readonly Written[], history?: readonly Kept[]): Promise<string[]>;
   /** Removes what was not kept. */
   discard(): Promise<void>;
+}
+
+interface Written {
+  readonly name: string;
+  readonly text: string;
 }
 
 /** A report for history/: the one that lies in the folder, or only the report.json that was named. */
@@ -66,14 +72,17 @@ export async function openFolder(
     kept: (sha256) => keptReport([folder], sha256),
     staged,
     keep: async (files, history = []) => {
-      for (const file of files) await writeFile(staged(file.name), file.text);
-      for (const one of history) await stageKept(one, folder, path.join(staging, HISTORY, one.name));
+      const extras = await lyingExtras(folder);
+      for (const file of files) await write(staged(file.name), file.text);
+      for (const one of history) await stageKept(one, folder, extras, path.join(staging, HISTORY, one.name));
       await mkdir(history.length > 0 ? path.join(folder, HISTORY) : folder, { recursive: true });
       const missing = [];
       for (const { name } of history) if (!(await isThere(path.join(folder, HISTORY, name)))) missing.push(name);
       // From here on nothing waits: no signal can come between.
       for (const name of missing) renameSync(path.join(staging, HISTORY, name), path.join(folder, HISTORY, name));
-      putInPlace([...names], staging, folder);
+      const isAnother = files.some(({ name, text }) => name === "report.json" && text !== lying?.text);
+      const gone = isAnother ? extras.filter((name) => !names.has(name)) : [];
+      putInPlace([...names], staging, folder, gone);
       return [...names].sort().map((file) => path.join(folder, file));
     },
     discard: () => rm(staging, { recursive: true, force: true }),
@@ -101,12 +110,18 @@ async function lyingIn(file: string): Promise<{ readonly experiment: string; rea
   }
 }
 
-async function stageKept({ json }: Kept, folder: string, into: string): Promise<void> {
-  await mkdir(into, { recursive: true });
-  if (json !== null) return writeFile(path.join(into, "report.json"), json);
-  for (const file of KEPT_FILES) {
-    if (await isThere(path.join(folder, file))) await copyFile(path.join(folder, file), path.join(into, file));
+async function stageKept({ json }: Kept, folder: string, extras: readonly string[], into: string): Promise<void> {
+  if (json !== null) return write(path.join(into, "report.json"), json);
+  for (const file of [...KEPT_FILES, ...extras]) {
+    if (!(await isThere(path.join(folder, file)))) continue;
+    await mkdir(path.dirname(path.join(into, file)), { recursive: true });
+    await copyFile(path.join(folder, file), path.join(into, file));
   }
+}
+
+async function write(file: string, text: string): Promise<void> {
+  await mkdir(path.dirname(file), { recursive: true });
+  await writeFile(file, text);
 }
 
 function isThere(file: string): Promise<boolean> {

@@ -2,8 +2,8 @@ import { type Accrual, type DaysSince, levelSentence, type Subgroup, type Subgro
 import type { Effect } from "../decision/types.ts";
 import type { Plan } from "../plan/types.ts";
 import { isAbsent } from "../stats/index.ts";
+import type { AccrualJson, DifferenceJson, SinceEnrolmentJson, SubgroupJson } from "./json-types.ts";
 import { isoDay } from "./sections/weekdays.ts";
-import type { AccrualJson, DifferenceJson, SinceEnrolmentJson, SubgroupJson } from "./types.ts";
 
 /** `subgroups`, `accrual` and `sinceEnrolment` of report.json (DESIGN 7). */
 

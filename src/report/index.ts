@@ -16,12 +16,13 @@ export { effectsCsv } from "./csv.ts";
 export type { Kept } from "./folder.ts";
 export { FROM_CELLS, fingerprintOf, keptName, keptReport, REPLACES, shortFingerprint } from "./history.ts";
 export { reportJson } from "./json.ts";
+// what goes in and what comes out
+export type { ReportJson } from "./json-types.ts";
 export { firstPlanOf, type PreviousReport, previousReport, runOf } from "./previous.ts";
 export { reportJsonSchema } from "./schema.ts";
 export { summaryMd } from "./summary.ts";
 export { terminalText } from "./terminal.ts";
-// what goes in and what comes out
-export type { ReportFile, ReportFiles, ReportInputs, ReportJson, TerminalPaths } from "./types.ts";
+export type { ReportFile, ReportFiles, ReportInputs, TerminalPaths } from "./types.ts";
 
 /** The report's files as text, and its text for a terminal. Writes nothing: whoever calls it owns the folder. */
 export async function renderReport(inputs: ReportInputs): Promise<ReportFiles> {

@@ -1,12 +1,13 @@
 import type { Check } from "../checks/types.ts";
-import type { Choices, ContrastNormality, Effect } from "../decision/index.ts";
+import { type Choices, type ContrastNormality, type Effect, lookAccount } from "../decision/index.ts";
 import type { Contrast } from "../stats/types.ts";
 import { changesJson } from "./changes/changes.ts";
 import { twelveDigits } from "./digits.ts";
 import { flowJson } from "./flow.ts";
 import { accrualJson, sinceEnrolmentJson, subgroupJson } from "./groups-json.ts";
+import type { CheckJson, EffectJson, ReportJson, SensitivityJson } from "./json-types.ts";
 import { provenanceJson } from "./provenance.ts";
-import type { CheckJson, EffectJson, ReportInputs, ReportJson, SensitivityJson } from "./types.ts";
+import type { ReportInputs } from "./types.ts";
 
 /** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
 export function reportJson(inputs: ReportInputs): ReportJson {
@@ -20,6 +21,7 @@ export function reportJson(inputs: ReportInputs): ReportJson {
       sentence: conclusion.sentence,
       reasons: conclusion.reasons,
     },
+    looks: lookAccount(plan),
     flow: flowJson(plan, reduction),
     checks: inputs.checks.map(checkJson),
     effects: inputs.effects.map(effectJson),

@@ -1,5 +1,5 @@
 import type { Reduction } from "../engine/types.ts";
-import type { ProvenanceJson } from "./types.ts";
+import type { ProvenanceJson } from "./json-types.ts";
 
 /** What a report was made from: no path of the machine, and no time but the log's. */
 export function provenanceJson(of: {

@@ -28,6 +28,7 @@ const PARTIALS = [
   "term",
   "told",
   "baseline",
+  "baseline-row",
   "consort",
   "design",
   "sampling",

@@ -14,5 +14,8 @@ export const zone = z.enum([
   "within",
   "beyond",
 ]);
+export const count = z.number().min(0);
+/** From 0 to 1. */
+export const share = z.number().min(0).max(1);
 export const numberOrNull = z.number().nullable();
 export const fingerprint = z.string().regex(/^[0-9a-f]{64}$/);

@@ -1,146 +1,13 @@
 import { z } from "zod";
 import { changesSchema } from "./changes/schema.ts";
-import { decision, fingerprint, numberOrNull, outcome, role, zone } from "./schema-values.ts";
+import { effect, sensitivity } from "./schema-effects.ts";
+import { accrual, sinceEnrolment, subgroup } from "./schema-groups.ts";
+import { count, decision, fingerprint, numberOrNull, outcome, share } from "./schema-values.ts";
 
 const figure: z.ZodType = z.lazy(() =>
   z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(figure), z.record(z.string(), figure)]),
 );
-export const count = z.number().min(0);
-const tail = z.number().min(0).max(1);
 const byVariant = z.record(z.string(), count);
-
-const arm = z.strictObject({
-  units: count,
-  mean: numberOrNull,
-  sd: numberOrNull,
-  skewness: numberOrNull,
-  kurtosis: numberOrNull,
-  total: numberOrNull,
-  smallest: numberOrNull,
-  largest: numberOrNull,
-});
-
-const difference = z
-  .strictObject({
-    estimate: numberOrNull,
-    standardError: numberOrNull,
-    low: numberOrNull,
-    high: numberOrNull,
-    z: numberOrNull,
-    p: numberOrNull,
-    pAdjusted: numberOrNull,
-    method: z.enum(["normal", "welch", "score", "skew-corrected", "quantile"]),
-  })
-  .describe("Variant minus control, in the metric's unit. low and high are the ones that decide; z and p pointwise.");
-
-const relative = z
-  .strictObject({ estimate: z.number(), low: numberOrNull, high: numberOrNull })
-  .nullable()
-  .describe("Variant over control minus 1. An end without a limit is null.");
-
-const effect = z.strictObject({
-  metric: z.string(),
-  role,
-  summary: z.enum(["mean", "proportion", "quantile", "ratio-of-totals"]),
-  variant: z.string(),
-  control: z.string(),
-  arms: z.strictObject({ control: arm, variant: arm }),
-  difference,
-  relative,
-  adjusted: z
-    .strictObject({ difference, relative, theta: z.number(), varianceReduction: z.number() })
-    .nullable()
-    .describe("Adjusted for the plan's covariate. Where not null its difference decides, and zone and power are its."),
-  zone,
-  power: z.strictObject({ detectable: numberOrNull, unitsForWorthwhile: numberOrNull }),
-  normality: z
-    .strictObject({
-      skew: z.number().describe("Skewness of the estimate."),
-      lowerTail: tail.describe("Chance that the normal interval lies wholly below the truth."),
-      upperTail: tail.describe("Chance that it lies wholly above the truth."),
-      own: z
-        .strictObject({ lowerTail: tail, upperTail: tail })
-        .describe("By each arm's own shape; above stands the worse of that and of one shape for both."),
-      skewCorrected: z.strictObject({ low: z.number(), high: z.number() }),
-      unitsForTails: count
-        .nullable()
-        .describe("Units of all arms from which on both tails are within a fifth of the nominal one; at least."),
-      unitsByRule: count.describe("Rule of thumb: 355 times the squared skewness, units of each arm."),
-      largestShare: z
-        .number()
-        .nullable()
-        .describe("The largest unit's share of an arm's sum of squares about the mean; null for proportions."),
-    })
-    .nullable()
-    .describe("How good the normal approximation is for the contrast that decides."),
-});
-
-const subgroup = z
-  .strictObject({
-    column: z.string(),
-    metric: z.string(),
-    variant: z.string(),
-    levels: z.array(
-      z.strictObject({
-        level: z.string().nullable().describe("The value on the enrolling row; null for rest and missing."),
-        kind: z.enum(["value", "rest", "missing"]),
-        units: count.describe("Of both arms, with a value of the metric."),
-        difference,
-        relative,
-        standing: z.enum(["too-few", "against", "not-against"]),
-        sentence: z.string(),
-      }),
-    ),
-    heterogeneity: z.strictObject({ q: z.number(), df: count, p: tail }).nullable().describe("Cochran's Q."),
-  })
-  .describe("One effect by the levels of a column; low and high pointwise, pAdjusted over all levels.");
-
-const accrual = z
-  .strictObject({
-    metric: z.string(),
-    variant: z.string(),
-    band: z
-      .strictObject({ units: z.number(), planned: z.boolean() })
-      .describe("Where the band is narrowest, and whether that is the plan's number of units."),
-    days: z.array(
-      z.strictObject({
-        day: z.string().describe("Local, YYYY-MM-DD; with all units enrolled up to it."),
-        units: count,
-        estimate: numberOrNull,
-        low: numberOrNull,
-        high: numberOrNull,
-        bandLow: numberOrNull,
-        bandHigh: numberOrNull,
-      }),
-    ),
-  })
-  .describe("The effect as units enrolled: low and high of that day alone, the band on all days at once.");
-
-const sinceEnrolment = z
-  .strictObject({
-    metric: z.string(),
-    variant: z.string(),
-    units: count.describe("Of both arms, followed to the end."),
-    days: z.array(
-      z.strictObject({
-        day: count.describe("0 is the first day of 24 hours after enrolment."),
-        estimate: numberOrNull,
-        low: numberOrNull,
-        high: numberOrNull,
-        p: numberOrNull,
-      }),
-    ),
-    trend: z
-      .strictObject({
-        estimate: numberOrNull,
-        standardError: numberOrNull,
-        low: numberOrNull,
-        high: numberOrNull,
-        p: numberOrNull,
-      })
-      .describe("Change of the difference from one day to the next."),
-  })
-  .describe("One effect by day since enrolment, unadjusted and pointwise.");
 
 export const checkSchema = z
   .object({
@@ -186,6 +53,29 @@ export const provenanceSchema = z.strictObject({
   engine: z.strictObject({ name: z.string(), version: z.string() }),
 });
 
+const looks = z
+  .strictObject({
+    planned: z.array(share).describe("Shares of the planned size, rising; the last is 1."),
+    spending: z.enum(["obrien-fleming", "pocock"]),
+    at: count.describe("This look's number, from 1."),
+    reached: numberOrNull.describe("Analysed of planned units; null where the plan states no size."),
+    shares: z
+      .array(count)
+      .describe("Of the planned size, at which the looks so far count: earlier ones as planned, the last is this one."),
+    metrics: z
+      .array(
+        z.strictObject({
+          metric: z.string(),
+          alpha: share.describe("Two-sided, of one interval, all looks together."),
+          boundary: count.describe("The interval is estimate -+ boundary x standard error, on the normal's scale."),
+          spent: share.describe("Of alpha, by this look."),
+        }),
+      )
+      .describe("What decides or must not get worse, for each of its intervals."),
+  })
+  .nullable()
+  .describe("Planned interim looks; null where the plan has none.");
+
 /** report.json (DESIGN 7) as a schema: keys of the contract are closed, only a check's figures are open. */
 export const reportSchema = z.strictObject({
   format: z.literal(1),
@@ -196,51 +86,14 @@ export const reportSchema = z.strictObject({
     sentence: z.string(),
     reasons: z.array(z.string()),
   }),
+  looks,
   flow: flowSchema,
   checks: z.array(checkSchema),
   effects: z.array(effect),
   subgroups: z.array(subgroup),
   accrual: z.array(accrual),
   sinceEnrolment: z.array(sinceEnrolment),
-  sensitivity: z
-    .array(
-      z.strictObject({
-        metric: z.string(),
-        variant: z.string(),
-        rows: z.array(
-          z.strictObject({
-            choice: z.union([
-              z.enum([
-                "as-planned",
-                "unadjusted",
-                "no-cap",
-                "cap-0.99",
-                "cap-0.999",
-                "without-largest",
-                "other-way-in-two-variants",
-                "any-follow-up",
-                "without-first-day",
-                "normal",
-                "welch",
-                "score",
-                "skew-corrected",
-                "bootstrap-t",
-                "randomisation",
-                "log",
-              ]),
-              z.templateLiteral(["without-incident:", z.string()]),
-            ]),
-            estimate: numberOrNull,
-            low: numberOrNull,
-            high: numberOrNull,
-            sign: z.union([z.literal(-1), z.literal(0), z.literal(1)]).nullable(),
-            p: numberOrNull,
-            agrees: z.boolean(),
-          }),
-        ),
-      }),
-    )
-    .describe("Each contrast under other reasonable choices. agrees: it stands where the plan's own choice puts it."),
+  sensitivity,
   askedAfterwards: z
     .strictObject({ effects: z.array(effect), subgroups: z.array(subgroup) })
     .nullable()

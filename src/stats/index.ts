@@ -31,7 +31,7 @@ export { independence } from "./independence.ts";
 export type { LargestShare } from "./largest-share.ts";
 export { level } from "./level.ts";
 // Planned looks
-export { driftOfLooks, type Looks, lookBoundaries, lookCritical, pOfLooks } from "./looks.ts";
+export { alphaSpent, driftOfLooks, type Looks, lookBoundaries, lookCritical, pOfLooks } from "./looks.ts";
 // Moments
 export { type Moments, moments } from "./moments.ts";
 export { normalCritical, normalTwoSided, normalUpperTail } from "./normal.ts";

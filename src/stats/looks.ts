@@ -40,7 +40,8 @@ function boundariesWithPaths({ shares, spending, isLast }: Looks, alpha: number)
   let before: Paths | null = null;
   let spent = 0;
   for (const [k, t] of shares.entries()) {
-    const allowed = isLast && k === shares.length - 1 ? alpha / 2 : spentASide(spending, alpha, Math.min(t, 1));
+    const isEnd = isLast && k === shares.length - 1;
+    const allowed = alphaSpent({ shares: [t], spending, isLast: isEnd }, alpha) / 2;
     const boundary = boundaryOf(before, t, allowed - spent);
     stages.push({ t, boundary, before });
     const next = shares[k + 1];
@@ -48,6 +49,11 @@ function boundariesWithPaths({ shares, spending, isLast }: Looks, alpha: number)
     spent = allowed;
   }
   return stages;
+}
+
+/** What of alpha, two-sided, may have been spent by this look. */
+export function alphaSpent({ shares, spending, isLast }: Looks, alpha: number): number {
+  return isLast ? alpha : 2 * spentASide(spending, alpha, Math.min(shares.at(-1) ?? 0, 1));
 }
 
 /** The critical value of this look. */

@@ -2,7 +2,7 @@ import { readFile, writeFile } from "node:fs/promises";
 import path from "node:path";
 import { describe, expect, it } from "vitest";
 import { closeout } from "../../src/index.ts";
-import type { EffectJson, ReportJson } from "../../src/report/types.ts";
+import type { EffectJson, ReportJson } from "../../src/report/json-types.ts";
 import { inFolder } from "../property/temporary.ts";
 import { expectWithin } from "../stats/expect.ts";
 import { adjustedContrasts } from "../stats/reference.ts";

@@ -2,7 +2,7 @@ import { writeFile } from "node:fs/promises";
 import path from "node:path";
 import { beforeAll, describe, expect, it } from "vitest";
 import { closeout } from "../../src/index.ts";
-import type { ReportJson } from "../../src/report/types.ts";
+import type { ReportJson } from "../../src/report/json-types.ts";
 import { bandCritical, chiSquareUpperTail } from "../../src/stats/index.ts";
 import { type Dice, diceOf } from "../oracle/random/dice.ts";
 import { inFolder } from "../property/temporary.ts";

@@ -7,7 +7,7 @@ import {
   lookSentences,
   nextSentences,
 } from "../../src/decision/index.ts";
-import { looksSoFar } from "../../src/decision/looks.ts";
+import { lookAccount, looksSoFar } from "../../src/decision/looks.ts";
 import type { Effect } from "../../src/decision/types.ts";
 import type { Looks, Plan } from "../../src/plan/types.ts";
 import { holm, pOfLooks } from "../../src/stats/index.ts";
@@ -70,6 +70,28 @@ describe("planned looks", () => {
       expect(critical(effect)).toBeCloseTo(2.876158163, 6);
     for (const effect of four.filter(({ role }) => role === "guardrail"))
       expect(critical(effect)).toBeCloseTo(2.62961736, 6);
+  });
+
+  // boundaries as above; spent, by Python 3.11, statistics.NormalDist: 4 - 4 cdf(inv_cdf(1 - a/4) / sqrt(0.5))
+  it("are told with the boundary of each interval that decides, and how much of its alpha is spent", () => {
+    const one = lookAccount(planWith(1, { looks: looksAt(2) }));
+    expect(one).toMatchObject({ planned: QUARTERS, spending: "obrien-fleming", at: 2, reached: null });
+    expect(one?.shares).toEqual([0.25, 0.5]);
+    expect(one?.metrics.map(({ metric }) => metric)).toEqual(["Booked", "Opened", "Left"]);
+    for (const { alpha, boundary, spent } of one?.metrics ?? []) {
+      expect(alpha).toBeCloseTo(0.05, 12);
+      expect(boundary).toBeCloseTo(2.9631316, 6);
+      expect(spent).toBeCloseTo(0.003050645515977557, 10);
+    }
+    const any = planWith(2, { looks: looksAt(4) });
+    const last = lookAccount({ ...any, decision: { ...any.decision, primaries: "any" } });
+    const ofAlpha = last?.metrics.map(({ alpha, spent }) => [alpha.toFixed(6), spent.toFixed(6)]);
+    expect(ofAlpha).toEqual([
+      ["0.012500", "0.012500"],
+      ["0.012500", "0.012500"],
+      ["0.025000", "0.025000"],
+    ]);
+    expect(lookAccount(planWith(1, {}))).toBeNull();
   });
 
   it("adjust p so that it is under alpha exactly when the interval excludes 0", () => {

@@ -1,7 +1,7 @@
 import { afterEach, describe, expect, it, vi } from "vitest";
 import { z } from "zod";
 import { reportJsonSchema } from "../../src/index.ts";
-import type { ReportJson } from "../../src/report/types.ts";
+import type { ReportJson } from "../../src/report/json-types.ts";
 import { textOf } from "../report/markup.ts";
 import { EDGE_LOGS } from "./logs.ts";
 import { type Run, run } from "./run.ts";

@@ -36,8 +36,8 @@ describe("the split by day", () => {
       reductionOf(three, { enrolled: [600, 620, 580], soundness: { days: found } }),
     );
     expect(parts.map(({ id, title }) => [id, title])).toEqual([
-      ["allocation-1", "Calendar: share of the visitors enrolled, by day"],
-      ["allocation-2", "Map: share of the visitors enrolled, by day"],
+      ["allocation-1", '"calendar": share of the visitors enrolled, by day'],
+      ["allocation-2", '"map": share of the visitors enrolled, by day'],
     ]);
     expect(parts[0]?.sentences[0]).toBe(
       "Planned were 33.3%; of 2 days none lies beyond what chance allows on 99 of 100.",

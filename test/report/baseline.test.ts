@@ -1,8 +1,11 @@
 import { describe, expect, it } from "vitest";
 import { loadPlan } from "../../src/plan/index.ts";
+import { renderReport } from "../../src/report/index.ts";
 import { baselineTable, largest } from "../../src/report/sections/baseline.ts";
 import { consortTable } from "../../src/report/sections/consort.ts";
+import type { ReportInputs } from "../../src/report/types.ts";
 import { reduced } from "../engine/small.ts";
+import { adopt } from "./cases.ts";
 
 const PLAN = (more: string) => `experiment: Small
 question: Were the groups alike?
@@ -28,6 +31,33 @@ async function tableOf(more: string) {
   const { reduction } = await reduced(PLAN(more), { "log.csv": LOG });
   return baselineTable(loaded.plan, reduction);
 }
+
+const levelsInBoth: ReportInputs = {
+  ...adopt,
+  reduction: {
+    ...adopt.reduction,
+    facts: {
+      ...adopt.reduction.facts,
+      subgroups: [
+        {
+          column: "country",
+          levels: [
+            { level: { kind: "value", text: "NO" }, enrolled: [30, 31] },
+            { level: { kind: "value", text: "other" }, enrolled: [20, 18] },
+            { level: { kind: "rest", levels: 4 }, enrolled: [9, 8] },
+          ],
+        },
+        {
+          column: "platform",
+          levels: [
+            { level: { kind: "value", text: "phone" }, enrolled: [50, 52] },
+            { level: { kind: "missing" }, enrolled: [9, 5] },
+          ],
+        },
+      ],
+    },
+  },
+};
 
 describe("the groups before enrolment", () => {
   it("stand side by side with mean, spread and number, and the standardised difference", async () => {
@@ -57,12 +87,14 @@ describe("the groups before enrolment", () => {
     const table = baselineTable(loaded.plan, reduction);
     // by hand: SE 1 of 4 and 3 of 4, variances 1/4 and 1/4, 0.5 / 0.5; NO 2 and 1 of 4, 1/3 and 1/4, -0.25 / sqrt(7/24);
     // no value 1 and 0 of 4, 1/4 and 0, -0.25 / sqrt(1/8)
-    expect(table?.rows.map(({ what, standardised }) => [what, standardised])).toEqual([
-      ['"country" at enrolment: SE', "1.000"],
-      ['"country" at enrolment: NO', "\u22120.463"],
-      ['"country" at enrolment: no value', "\u22120.707"],
+    const [country] = table?.columns ?? [];
+    expect(country?.head).toBe('"country" at enrolment');
+    expect(country?.rows.map(({ what, standardised }) => [what, standardised])).toEqual([
+      ["SE", "1.000"],
+      ["NO", "\u22120.463"],
+      ["No value", "\u22120.707"],
     ]);
-    expect(table?.rows[0]?.cells).toEqual([
+    expect(country?.rows[0]?.cells).toEqual([
       { figure: "25.0%", beside: "1 visitor" },
       { figure: "75.0%", beside: "3 visitors" },
     ]);
@@ -72,6 +104,23 @@ describe("the groups before enrolment", () => {
       (row) => row.item2010 === "15",
     );
     expect(item?.place?.id).toBe("before");
+  });
+
+  it("name each column once on the page, its values under it", async () => {
+    const html = (await renderReport(levelsInBoth)).html;
+    const table = /<table[^>]*>\s*<caption id="before-caption">.*?<\/table>/s.exec(html)?.[0] ?? "no table";
+    const heads = [...table.matchAll(/<th scope="(rowgroup|row)"( colspan="4")?>([^<]*)</g)].map(
+      ([, scope, spans, text]) => `${scope}${spans === undefined ? "" : ", across"}: ${text}`,
+    );
+    expect(heads).toEqual([
+      "rowgroup, across: \u201ccountry\u201d at enrolment",
+      "row: NO",
+      "row: other",
+      "row: The 4 other values",
+      "rowgroup, across: \u201cplatform\u201d at enrolment",
+      "row: phone",
+      "row: No value",
+    ]);
   });
 
   it("are not shown where the plan names nothing that was known of them", async () => {

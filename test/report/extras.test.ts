@@ -1,15 +1,15 @@
-import { mkdir, mkdtemp, readdir, readFile, rm, writeFile } from "node:fs/promises";
+import { mkdir, mkdtemp, rm, writeFile } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
-import { keepExtras } from "../../src/report/extras.ts";
+import { lyingExtras } from "../../src/report/extra-names.ts";
 import { renderReport } from "../../src/report/index.ts";
 import { cssText } from "../../src/report/render.ts";
-import type { ExtraFile } from "../../src/report/types.ts";
 import { adopt, notSettled, several, undecidable } from "./cases.ts";
 import { everyCase } from "./every.ts";
 import { grouped } from "./groups.ts";
 import { tagsOf, textOf } from "./markup.ts";
+import { secondRun } from "./rerun-case.ts";
 
 async function extrasOf(inputs: typeof adopt): Promise<Map<string, string>> {
   return new Map((await renderReport(inputs)).extras().map(({ name, text }) => [name, text]));
@@ -26,6 +26,20 @@ describe.each(everyCase)("what --figures adds to the report of the case %s", asy
     expect(files.has("figures/forest.svg")).toBe(
       inputs.conclusion.decision !== "undecidable" && inputs.effects.length > 0,
     );
+  });
+
+  it("has the estimates before and after, where the report replaces one", () => {
+    expect(files.has("figures/before-after.svg")).toBe(inputs.rerun !== undefined);
+  });
+
+  // a figure goes where the sentence at the head of its section does not follow
+  it("says in every figure of an effect that it is not for deciding, where nothing can be decided", () => {
+    const ofEffects = svgs.filter(([file]) => !/(flow|allocation|shape)/.test(file));
+    for (const [file, svg] of ofEffects) {
+      expect(textOf(svg).includes("for finding the fault, not for deciding"), file).toBe(
+        inputs.conclusion.decision === "undecidable",
+      );
+    }
   });
 
   it.each(svgs)("gives %s as one drawing that asks for nothing and runs nothing", (_name, svg) => {
@@ -75,6 +89,16 @@ describe("the figures of days and subgroups", async () => {
     }
     expect(textOf(get(files, "figures/subgroup-1.svg"))).toContain("Does not point against the whole.");
     expect(textOf(get(files, "figures/days-1.svg"))).toContain("days since enrolment");
+  });
+});
+
+describe("the estimates before and after, as a file,", () => {
+  it("name each run, and stand one above the other with their intervals", async () => {
+    const svg = textOf(get(await extrasOf(secondRun), "figures/before-after.svg"));
+    expect(svg).toMatch(
+      /Booked \+10\.8% \(\+7\.3% to \+14\.4%\) first run Booked \+10\.0% \(\+6\.5% to \+13\.7%\) now/,
+    );
+    expect(svg).toContain("Upper line of each pair, dashed: the first run.");
   });
 });
 
@@ -139,48 +163,29 @@ describe("decision.csv", () => {
   });
 });
 
-describe("the files of an earlier run", () => {
+describe("the files of an earlier run in a report's folder", () => {
   let folder: string;
   beforeEach(async () => {
     folder = await mkdtemp(path.join(tmpdir(), "closeout-extras-"));
+    await mkdir(path.join(folder, "figures"));
   });
   afterEach(() => rm(folder, { recursive: true, force: true }));
-  const files: readonly ExtraFile[] = [
-    { name: "page-one.html", text: "one" },
-    { name: "figures/forest.svg", text: "two" },
-  ];
+  const write = async (names: readonly string[]) => {
+    for (const name of names) await writeFile(path.join(folder, name), "");
+  };
 
-  it("go when the figures are not asked for, and nothing else does", async () => {
-    await mkdir(path.join(folder, "figures"));
-    await writeFile(path.join(folder, "figures", "mine.svg"), "");
-    await writeFile(path.join(folder, "report.html"), "");
-    await keepExtras(folder, files);
-    expect((await readdir(path.join(folder, "figures"))).sort()).toEqual(["forest.svg", "mine.svg"]);
-    await keepExtras(folder, []);
-    expect((await readdir(folder)).sort()).toEqual(["figures", "report.html"]);
-    expect(await readdir(path.join(folder, "figures"))).toEqual(["mine.svg"]);
+  it.each(everyCase)("are found whatever figure they are (%s)", async (_, inputs) => {
+    const names = (await renderReport(inputs)).extras().map(({ name }) => name);
+    await write(names);
+    expect((await lyingExtras(folder)).sort()).toEqual([...names].sort());
   });
 
-  it("go with their folder where nothing else lies in it", async () => {
-    await keepExtras(folder, files);
-    await keepExtras(folder, []);
-    expect(await readdir(folder)).toEqual([]);
-  });
-
-  it.each(everyCase)("go whatever figure they are (%s)", async (_, inputs) => {
-    await keepExtras(folder, (await renderReport(inputs)).extras());
-    await keepExtras(folder, []);
-    expect(await readdir(folder)).toEqual([]);
-  });
-
-  it("give place to the new ones, and nothing is left between", async () => {
-    await keepExtras(folder, files);
-    expect(await keepExtras(folder, [{ name: "figures/flow.svg", text: "three" }])).toEqual([
-      path.join(folder, "figures/flow.svg"),
-    ]);
-    expect(await readdir(folder)).toEqual(["figures"]);
-    expect(await readFile(path.join(folder, "figures", "flow.svg"), "utf8")).toBe("three");
-    expect(await readdir(path.join(folder, "figures"))).toEqual(["flow.svg"]);
+  it("are told from what else lies there", async () => {
+    await write(["report.html", "notes.csv", "figures/mine.svg", "figures/flow.svg.bak", "figures/flow.svg"]);
+    await mkdir(path.join(folder, "figures", "days-1.svg"));
+    expect(await lyingExtras(folder)).toEqual(["figures/flow.svg"]);
+    await rm(path.join(folder, "figures"), { recursive: true });
+    expect(await lyingExtras(folder)).toEqual([]);
   });
 });
 

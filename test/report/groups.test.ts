@@ -3,9 +3,10 @@ import { accrual as accrualChart } from "../../src/report/charts/accrual.ts";
 import { draw } from "../../src/report/charts/draw.ts";
 import { reportJson } from "../../src/report/index.ts";
 import { page } from "../../src/report/page.ts";
+import { accrualParts } from "../../src/report/sections/accrual.ts";
 import { isoDay, weekdaysSentence } from "../../src/report/sections/weekdays.ts";
 import { adopt } from "./cases.ts";
-import { grouped } from "./groups.ts";
+import { accrualOf, grouped } from "./groups.ts";
 
 const metricOf = async (name: string) => (await page(grouped)).metrics.find((metric) => metric.name === name);
 
@@ -45,10 +46,29 @@ describe("the effect as units enrolled", () => {
       "The band holds the truth on all days at once with 95% confidence, so it may be read on any day and as often as one likes; the interval of one day may not. It is narrowest at 100,000 visitors, as many as were planned.",
     );
     // estimates less twice 0.01 / sqrt(day): 0, 0.0019, ...: from the second day on above 0
-    expect(said).toContain("From 3 March 2026 on the whole band lies above no difference.");
+    expect(said).toContain("From 3 March 2026 to the end the whole band lies above zero.");
     expect(said).toContain("Monday twice, Tuesday, Wednesday, Thursday and Friday once and Saturday and Sunday never.");
     expect(part?.rows).toHaveLength(6);
     expect(part?.rows[0]).toEqual({ day: "2 March 2026", cells: ["16,000", "0.02", "0.01", "0.03", "0", "0.04"] });
+  });
+  // "No difference lies within the band on every day" could be read as "there is no difference that does"
+  it("says where zero lies to the band, in words that can be read one way only", async () => {
+    const said = async (estimates: readonly number[]) => {
+      const parts = await accrualParts(
+        grouped.plan,
+        grouped.effects,
+        [accrualOf("Booked", estimates)],
+        grouped.reduction,
+      );
+      return parts.get("Booked")?.[0]?.sentences.at(-1);
+    };
+    // the band is 0.02 / sqrt(day) on either side
+    expect(await said([0.001, 0.001])).toBe("Zero lies within the band on every day shown.");
+    expect(await said([0.03, 0.001])).toBe(
+      "On some days the whole band lay on one side of zero; at the end zero lies within it.",
+    );
+    expect(await said([0.001, 0.03])).toBe("On the last day the whole band lies above zero.");
+    expect(await said([0.001, -0.03, -0.03])).toBe("From 3 March 2026 to the end the whole band lies below zero.");
   });
   it("is drawn for what decides, and stands in a table for what is for information", async () => {
     expect((await metricOf("Booked"))?.accrual[0]?.drawing).not.toBeNull();
@@ -101,7 +121,7 @@ describe("the effect by subgroup", () => {
     const part = (await metricOf("Booked"))?.subgroups[0];
     expect(part?.figure?.rows.map(({ level, stands }) => [level, stands])).toEqual([
       ["NO", "Does not point against the whole."],
-      ["Other", "Points against the whole."],
+      ["other", "Points against the whole."],
       ["IS", 'Too few to tell: 34 visitors with "calendar", 31 with "list".'],
       ["The 4 other values", "Does not point against the whole."],
       ["No value", 'Too few to tell: 4 visitors with "calendar", 1 with "list".'],
@@ -109,6 +129,13 @@ describe("the effect by subgroup", () => {
     expect(part?.sentences[0]).toBe(
       'The levels of "country" differ from each other by more than chance explains (Cochran\u2019s Q 21.4 on 2 degrees of freedom, p < 0.0001).',
     );
+  });
+  it("shows a value of the log as it is, in the numbers too, and begins our own words with a capital", async () => {
+    for (const name of ["Booked", "Fare per visitor"]) {
+      const part = (await metricOf(name))?.subgroups[0];
+      const levels = part?.numbers.map(({ level }) => level);
+      expect(levels).toEqual(["NO", "other", "IS", "The 4 other values", "No value"]);
+    }
   });
   it("keeps levels apart in report.json by their kind", () => {
     const [first] = reportJson(grouped).subgroups;

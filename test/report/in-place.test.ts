@@ -1,4 +1,4 @@
-import { mkdirSync, mkdtempSync, rmSync, writeFileSync } from "node:fs";
+import { mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
@@ -38,6 +38,49 @@ describe("the files of a run", () => {
     // report.json was never written: its rename fails when the three others are done
     expect(() => putInPlace(names, join(base, "staged"), join(base, "report"))).toThrow(/ENOENT/);
     expect(filesOf(join(base, "report"))).toEqual(earlier);
+  });
+});
+
+describe("the figures and other files of --figures", () => {
+  const earlier = {
+    "decision.csv": "old",
+    "figures/flow.svg": "old",
+    "figures/mine.svg": "mine",
+    "report.json": "old",
+  };
+  beforeEach(() => {
+    for (const folder of ["report", "staged"]) mkdirSync(join(base, folder, "figures"));
+    write("report", earlier);
+  });
+  const put = (names: string[], gone: string[]) => putInPlace(names, join(base, "staged"), join(base, "report"), gone);
+
+  it("are put in place with the others, and those that have no new one go", () => {
+    write("staged", { "figures/forest.svg": "new", "report.json": "new" });
+    put(["figures/forest.svg", "report.json"], ["decision.csv", "figures/flow.svg"]);
+    expect(filesOf(join(base, "report"))).toEqual({
+      "figures/forest.svg": "new",
+      "figures/mine.svg": "mine",
+      "report.json": "new",
+    });
+  });
+
+  it("are put back with the others when one of them cannot be moved", () => {
+    write("staged", { "figures/forest.svg": "new", "page-one.html": "new" });
+    // report.json was never written
+    expect(() =>
+      put(["figures/forest.svg", "page-one.html", "report.json"], ["decision.csv", "figures/flow.svg"]),
+    ).toThrow(/ENOENT/);
+    expect(filesOf(join(base, "report"))).toEqual(earlier);
+  });
+
+  it("take their folder with them where nothing else lies in it, also one that was made in vain", () => {
+    rmSync(join(base, "report", "figures", "mine.svg"));
+    write("staged", { "report.json": "new" });
+    put(["report.json"], ["figures/flow.svg"]);
+    expect(readdirSync(join(base, "report")).sort()).toEqual(["decision.csv", "report.json"]);
+    write("staged", { "figures/forest.svg": "new" });
+    expect(() => put(["figures/forest.svg", "report.json"], [])).toThrow(/ENOENT/);
+    expect(readdirSync(join(base, "report")).sort()).toEqual(["decision.csv", "report.json"]);
   });
 });
 

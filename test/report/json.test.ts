@@ -3,11 +3,13 @@ import type { z } from "zod";
 import { NO_POWER } from "../../src/decision/power.ts";
 import { twelveDigits } from "../../src/report/digits.ts";
 import { reportJson } from "../../src/report/json.ts";
+import type { ReportJson } from "../../src/report/json-types.ts";
 import { reportJsonSchema, reportSchema } from "../../src/report/schema.ts";
-import type { ReportInputs, ReportJson } from "../../src/report/types.ts";
+import type { ReportInputs } from "../../src/report/types.ts";
 import * as cases from "./cases.ts";
 import { everyCase } from "./every.ts";
 import { hostile } from "./hostile.ts";
+import { atALook } from "./meanwhile.ts";
 
 describe("report.json", () => {
   it.each(everyCase)("of the case %s fits its schema and survives a file", (_, inputs) => {
@@ -27,7 +29,8 @@ describe("report.json", () => {
       | "changes"
       | "subgroups"
       | "accrual"
-      | "sinceEnrolment";
+      | "sinceEnrolment"
+      | "looks";
     expectTypeOf<Mutable<Pick<ReportJson, Closed>>>().toEqualTypeOf<Pick<z.infer<typeof reportSchema>, Closed>>();
   });
 
@@ -52,6 +55,19 @@ describe("report.json", () => {
     const detectable = (1.959963984540054 + 0.8416212335729143) * standardError;
     expect((booked?.power.detectable ?? 0) / detectable).toBeCloseTo(1, 10);
     expect((booked?.power.unitsForWorthwhile ?? 0) / (100_301 * (detectable / (0.05 * 0.12)) ** 2)).toBeCloseTo(1, 10);
+  });
+
+  // the page told the looks, report.json did not: a program could not know that the interval was a repeated one
+  it("tells the planned looks, and null where the plan has none", () => {
+    const { looks, effects } = reportJson(atALook);
+    expect(looks).toMatchObject({ planned: [0.25, 0.5, 0.75, 1], at: 2, spending: "obrien-fleming", reached: 0.42828 });
+    expect(looks?.shares).toEqual([0.25, 0.42828]);
+    // Python 3.11, statistics.NormalDist: 4 - 4 cdf(inv_cdf(1 - 0.05/4) / sqrt(0.42828))
+    expect(looks?.metrics[0]?.spent).toBeCloseTo(0.0012297622041157474, 10);
+    expect(looks?.metrics.map(({ metric }) => metric)).toEqual(
+      effects.filter((effect) => effect.role !== "secondary").map((effect) => effect.metric),
+    );
+    expect(reportJson(cases.adopt).looks).toBeNull();
   });
 
   it("puts a check's figures beside its keys, and refuses one that would hide a key", () => {
@@ -118,7 +134,7 @@ describe("the JSON Schema", () => {
     expect(schema.$schema).toBe("https://json-schema.org/draft/2020-12/schema");
     expect(schema.additionalProperties).toBe(false);
     expect(schema.required).toEqual(
-      "format experiment conclusion flow checks effects subgroups accrual sinceEnrolment sensitivity askedAfterwards changes provenance".split(
+      "format experiment conclusion looks flow checks effects subgroups accrual sinceEnrolment sensitivity askedAfterwards changes provenance".split(
         " ",
       ),
     );

@@ -12,7 +12,7 @@ const TAGS = new Set(
    svg g path line text title desc`.split(/\s+/),
 );
 const ATTRIBUTES = new Set(
-  `lang charset name content class href id aria-labelledby aria-hidden role scope tabindex
+  `lang charset name content class href id aria-labelledby aria-hidden role scope colspan tabindex
    viewbox focusable fill stroke stroke-miterlimit stroke-width stroke-dasharray transform d x2 y2 opacity display
    text-anchor font-family font-size html`.split(/\s+/),
 );
@@ -68,6 +68,20 @@ describe.each(everyCase)("the page of the case %s", async (name, inputs) => {
 
   it("prints no figure that does not exist", () => {
     expect(textOf(html)).not.toMatch(/\bNaN\b|\bundefined\b|\bnull\b|\[object|Infinity/);
+  });
+
+  // "whose interval excludes no difference": no difference is excluded, or that of zero is
+  it('says zero, where "no difference" after a verb could be read two ways', () => {
+    expect(textOf(html)).not.toMatch(
+      /no difference (lies|stands)|(exclud|touch|hold|leave|above|below|of)\w* no difference/i,
+    );
+  });
+
+  // "calendar" of the log stood as "Calendar" in titles: another value, where a log has both
+  it("shows the name of a variant as it is, at the head of a sentence too", () => {
+    const names = inputs.plan.variants.map((variant) => variant.name).filter((own) => /^[a-z]+$/.test(own));
+    const capitals = names.map((own) => `${own[0]?.toUpperCase()}${own.slice(1)}`);
+    expect(textOf(html).match(new RegExp(`\\b(${["Nobody", ...capitals].join("|")})\\b`))?.[0]).toBeUndefined();
   });
 
   it("repeats to the byte", async () => {

@@ -58,7 +58,9 @@ describe("section 5 on the normal approximation", async () => {
     const figures = [...html.matchAll(/<section class="sampling wide".*?<\/section>/gs)].map(([figure]) => figure);
     expect(figures).toHaveLength(3);
     expect(figures.map((figure) => figure.includes("<svg"))).toEqual([true, true, false]);
-    expect(textOf(figures[0] ?? "")).toContain("Calendar against list: how near the normal curve");
+    expect(textOf(figures[0] ?? "")).toContain(
+      "\u201ccalendar\u201d against \u201clist\u201d: how near the normal curve",
+    );
     const description = /<desc id="sampling-1-drawing-desc">([^<]*)</.exec(html)?.[1] ?? "";
     expect(description).toMatch(/^Beyond 1\.96 on either side lie, with 1\/16 of the visitors [\d.]+% below and/);
     expect(figures[0]).toContain("The numbers behind it");

@@ -13,6 +13,8 @@ const LANES = 2;
 
 interface Lane {
   readonly on: Bench;
+  /** Whether the second run gives the figures as files too; the first does. */
+  readonly figures: boolean;
   /** The folder with the first report, and as the second run leaves it. */
   readonly before: Readonly<Record<string, string>>;
   readonly after: Readonly<Record<string, string>>;
@@ -22,8 +24,9 @@ interface Lane {
 }
 
 /** The second run as a child; `done` settles when the engine has said its last word. */
-function secondRun({ folder }: Bench) {
-  const child = spawn(process.execPath, [MAIN, "report", "plan.yaml", "--out", "report", "--threads", "1"], {
+function secondRun({ folder }: Bench, figures: boolean) {
+  const options = ["--out", "report", "--threads", "1", ...(figures ? ["--figures"] : [])];
+  const child = spawn(process.execPath, [MAIN, "report", "plan.yaml", ...options], {
     cwd: folder,
     stdio: ["ignore", "ignore", "pipe"],
   });
@@ -35,28 +38,28 @@ function secondRun({ folder }: Bench) {
   return { child, ended, done };
 }
 
-async function lane(): Promise<Lane> {
+async function lane(figures: boolean): Promise<Lane> {
   const on = bench();
-  const first = await on.run(PLAN);
+  const first = await on.run(PLAN, { figures: true });
   if (first.status !== 0) throw new Error(first.text);
   const before = filesOf(on.report);
   writeFileSync(join(on.folder, "plan.yaml"), PLAN + STAFF);
   const began = performance.now();
-  const { ended, done } = secondRun(on);
+  const { ended, done } = secondRun(on, figures);
   await done;
   const engine = performance.now() - began;
   expect(await ended).toBe(0);
   const took = performance.now() - began;
-  return { on, before, after: filesOf(on.report), took, writing: took - engine };
+  return { on, figures, before, after: filesOf(on.report), took, writing: took - engine };
 }
 
 /** Kills the second run at one moment; half of them while the report is written. */
 async function interrupt(
-  { on, before, after, took, writing }: Lane,
+  { on, figures, before, after, took, writing }: Lane,
   i: number,
 ): Promise<"before" | "after" | "between"> {
   putBack(on.report, before);
-  const { child, ended, done } = secondRun(on);
+  const { child, ended, done } = secondRun(on, figures);
   const share = (i * 0.6180339887) % 1; // spread evenly, however many there are
   if (i % 2 === 0) await wait(share * took);
   else {
@@ -69,12 +72,11 @@ async function interrupt(
   for (const [name, text] of Object.entries(found)) {
     expect([before[name], after[name]], `${name}, kill ${i}`).toContain(text);
   }
-  const own = Object.keys(before);
-  if (own.every((name) => found[name] === before[name])) return "before";
-  if (own.every((name) => found[name] === after[name])) return "after";
+  if (Object.keys(before).every((name) => found[name] === before[name])) return "before";
+  if (Object.keys({ ...found, ...after }).every((name) => found[name] === after[name])) return "after";
   // Between two renames, a fraction of a millisecond: report.json is the last, so the next run takes up from there.
   expect(found["report.json"]).toBe(before["report.json"]);
-  expect(await secondRun(on).ended).toBe(0);
+  expect(await secondRun(on, figures).ended).toBe(0);
   expect(filesOf(on.report)).toEqual(after);
   return "between";
 }
@@ -84,7 +86,7 @@ describe("a run that is interrupted", () => {
   beforeAll(async () => {
     build();
     lanes = [];
-    for (let i = 0; i < LANES; i++) lanes.push(await lane());
+    for (let i = 0; i < LANES; i++) lanes.push(await lane(i % 2 === 0));
   });
   afterAll(() => {
     for (const { on } of lanes) on.remove();
@@ -103,10 +105,11 @@ describe("a run that is interrupted", () => {
     // most moments lie before the end
     expect(all.filter((end) => end === "before").length).toBeGreaterThan(KILLS / 2);
     // what killed runs left beside the folder goes with the next run
-    for (const { on, before, after } of lanes) {
+    for (const { on, figures, before, after } of lanes) {
       putBack(on.report, before);
-      expect(await secondRun(on).ended).toBe(0);
+      expect(await secondRun(on, figures).ended).toBe(0);
       expect(filesOf(on.report)).toEqual(after);
+      expect(Object.keys(after).filter((name) => /^(figures|page-one|decision)/.test(name)).length > 0).toBe(figures);
       expect(readdirSync(on.folder).sort()).toEqual(["log.csv", "plan.yaml", "report"]);
     }
     // half a minute of two cores to itself; far longer where others work beside it

@@ -40,6 +40,25 @@ describe("a rerun", () => {
     expect(filesOf(on.report)).toEqual(second);
   });
 
+  // figures of the report before lay beside the new one, and could be pasted as its own
+  it("takes the earlier report's figures with it into history/, and has none beside it but its own", async () => {
+    const isExtra = (name: string) => /^(figures\/|page-one|decision)/.test(name);
+    const extras = () => Object.fromEntries(Object.entries(filesOf(on.report)).filter(([name]) => isExtra(name)));
+    await on.run(PLAN, { figures: true });
+    const first = extras();
+    expect(Object.keys(first)).toContain("figures/forest.svg");
+    await reported(PLAN); // the same report to the byte: they are its own
+    expect(extras()).toEqual(first);
+    await reported(PLAN + STAFF);
+    expect(extras()).toEqual({});
+    expect(readdirSync(on.report)).not.toContain("figures");
+    const [kept = ""] = history();
+    expect(filesOf(join(on.report, "history", kept))).toMatchObject(first);
+    await on.run(PLAN + STAFF, { figures: true });
+    expect(Object.keys(extras()).sort()).toEqual(Object.keys(first).sort());
+    expect(extras()["decision.csv"]).not.toBe(first["decision.csv"]);
+  });
+
   it("holds the rule to the first run's, not only to the run before", async () => {
     await reported(PLAN);
     await reported(PLAN.replace("5%", "3%"));

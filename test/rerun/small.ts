@@ -40,7 +40,7 @@ export const LOG = [
 export interface Bench {
   readonly folder: string;
   readonly report: string;
-  run(plan: string, options?: { previous?: string; fromCells?: string }): Promise<Outcome>;
+  run(plan: string, options?: { previous?: string; fromCells?: string; figures?: boolean }): Promise<Outcome>;
   remove(): void;
 }
 

@@ -1,6 +1,6 @@
 import { mergedNames, type PlanChange } from "../../plan/index.ts";
+import type { ReportJson } from "../json-types.ts";
 import { type EarlierReport, firstPlanOf, type PreviousReport, runOf } from "../previous.ts";
-import type { ReportJson } from "../types.ts";
 import type { ChangesJson, EffectChange, FileChange, LineChange, Shown, StepsJson } from "./types.ts";
 
 /** What a rerun knows beyond its own figures. */

@@ -1,6 +1,7 @@
 import type { TopLevelSpec } from "vega-lite";
 import { type Bin, beyond, type Shape } from "../../cells/index.ts";
-import { inPixels, type Letters, letters, line, type Point, type Stroke, strokes } from "./pixels.ts";
+import { inPixels, letters, line, type Point, type Stroke, strokes } from "./pixels.ts";
+import { FOOT, middle, placed, type SizeAxis, sides, ticked, WIDTH } from "./size-axis.ts";
 import { theme } from "./theme.ts";
 
 /** One arm, and the dashes that its lines have wherever they are drawn. */
@@ -9,30 +10,13 @@ export interface DrawnShape {
   readonly dash: readonly number[];
 }
 
-/** The axis that all arms share: by ratios on either side of 0, which has a column of its own between them. */
-export interface SizeAxis {
-  /** log2 of the sizes at which a side begins and ends. */
-  readonly least: number;
-  readonly most: number;
-  readonly below: boolean;
-  readonly above: boolean;
-  /** The highest outline, as a share of units a doubling. */
-  readonly highest: number;
-  readonly isWhole: boolean;
-}
-
-const WIDTH = 340;
-/** Zero's column, in which the lower picture has its scale. */
-const GAP = 72;
 const ROW = 64;
 const FULL = 0.74;
 const BAR = 9;
-const FOOT = 22;
 const TAIL = 130;
 const HEAD = 8;
 /** Sizes under a millionth of the largest stand at the beginning of the axis. */
 const MOST_DOUBLINGS = 20;
-const LETTER = 7;
 
 export function sizeAxis(shapes: readonly Shape[], isWhole: boolean): SizeAxis {
   const bins = shapes.flatMap(({ bins }) => bins);
@@ -116,103 +100,6 @@ function tailPoints(shape: Shape, axis: SizeAxis, height: (share: number) => num
   const above = shape.bins.filter(({ from }) => from > 0).map(({ from }) => from);
   const below = shape.bins.filter(({ to }) => to < 0).map(({ to }) => to);
   return [...below.flatMap((edge) => point(edge, 0)), ...above.flatMap((edge) => point(edge, 1))];
-}
-
-/** The axis alone, under the strips. */
-export function sizeScale(axis: SizeAxis, label: (value: number) => string): TopLevelSpec {
-  return inPixels(WIDTH, FOOT, ticked(axis, 0, label, true));
-}
-
-function ticked(axis: SizeAxis, base: number, label: (value: number) => string, hasZero = false) {
-  const ticks = ticksOf(axis, label);
-  const zero: Letters[] = hasZero ? [{ x: middle(axis), y: base + 17, text: "0" }] : [];
-  return [
-    strokes([1, 0], theme.line, [
-      ...sides(axis).map(({ from, to }) => ({ x: from, y: base, toX: to, toY: base })),
-      ...ticks.map(({ x }) => ({ x, y: base, toX: x, toY: base + 4 })),
-    ]),
-    letters("center", theme.quiet, [...zero, ...ticks.map(({ x, text }) => ({ x, y: base + 17, text }))]),
-  ];
-}
-
-const CANDIDATES: readonly (readonly [multiples: readonly number[], every: number])[] = [
-  [[1, 2, 5], 1],
-  [[1, 5], 1],
-  [[1], 1],
-  [[1], 2],
-  [[1], 3],
-  [[1], 6],
-];
-
-/** As many round numbers as have room for their text. */
-function ticksOf(axis: SizeAxis, label: (value: number) => string): Letters[] {
-  const signs = [...(axis.below ? [-1] : []), ...(axis.above ? [1] : [])];
-  for (const [multiples, every] of CANDIDATES) {
-    const ticks = signs
-      .flatMap((sign) =>
-        decadesOf(axis, every).flatMap((decade) =>
-          multiples.map((multiple) => sign * Number((multiple * 10 ** decade).toPrecision(1))),
-        ),
-      )
-      .filter((value) => isOnAxis(value, axis))
-      .map((value) => ({ x: tickPlace(value, axis), y: 0, text: label(value) }))
-      .filter(isInside)
-      .sort((a, b) => a.x - b.x);
-    if (ticks.every((tick, i) => fits(tick, ticks[i + 1]))) return ticks;
-  }
-  return [];
-}
-
-function decadesOf({ least, most }: SizeAxis, every: number): number[] {
-  const first = Math.floor(least * Math.log10(2));
-  const last = Math.ceil(most * Math.log10(2));
-  return Array.from({ length: last - first + 1 }, (_, i) => first + i).filter((decade) => decade % every === 0);
-}
-
-const halfOf = ({ text }: Letters) => (text.length * LETTER) / 2;
-
-function isInside(tick: Letters): boolean {
-  return tick.x + halfOf(tick) <= WIDTH && tick.x - halfOf(tick) >= 0;
-}
-
-function fits(tick: Letters, next: Letters | undefined): boolean {
-  return next === undefined || next.x - tick.x > halfOf(tick) + halfOf(next) + 6;
-}
-
-function isOnAxis(value: number, { least, most, isWhole }: SizeAxis): boolean {
-  const size = Math.log2(Math.abs(value));
-  return size >= least && (isWhole ? size < most : size <= most);
-}
-
-/** A small whole number stands in the middle of its bin. */
-function tickPlace(value: number, axis: SizeAxis): number {
-  return placed(
-    axis.isWhole && Math.abs(value) < 8 ? Math.sign(value) * Math.sqrt(value * value + Math.abs(value)) : value,
-    axis,
-  );
-}
-
-function sideWidth({ below, above }: SizeAxis): number {
-  return (WIDTH - GAP) / (below && above ? 2 : 1);
-}
-/** Where zero's column has its middle. */
-function middle(axis: SizeAxis): number {
-  return (axis.below ? sideWidth(axis) : 0) + GAP / 2;
-}
-
-function sides(axis: SizeAxis): { readonly from: number; readonly to: number }[] {
-  const zero = middle(axis);
-  return [
-    ...(axis.below ? [{ from: zero - GAP / 2 - sideWidth(axis), to: zero - GAP / 2 }] : []),
-    ...(axis.above ? [{ from: zero + GAP / 2, to: zero + GAP / 2 + sideWidth(axis) }] : []),
-  ];
-}
-
-/** Where a value that is not 0 stands. */
-function placed(value: number, axis: SizeAxis): number {
-  const { least, most } = axis;
-  const part = Math.min(1, Math.max(0, (Math.log2(Math.abs(value)) - least) / (most - least || 1)));
-  return middle(axis) + Math.sign(value) * (GAP / 2 + part * sideWidth(axis));
 }
 
 interface Step {

@@ -1,6 +1,6 @@
 import { z } from "zod";
-import { checkSchema, count, flowSchema, provenanceSchema } from "../schema.ts";
-import { numberOrNull, role } from "../schema-values.ts";
+import { checkSchema, flowSchema, provenanceSchema } from "../schema.ts";
+import { count, numberOrNull, role } from "../schema-values.ts";
 
 const day = z
   .string()

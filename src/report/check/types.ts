@@ -1,7 +1,7 @@
 import type { Check } from "../../checks/types.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Plan, Role } from "../../plan/types.ts";
-import type { CheckJson, FlowJson, ProvenanceJson } from "../types.ts";
+import type { CheckJson, FlowJson, ProvenanceJson } from "../json-types.ts";
 
 /** check.json: what may be known of a test before its end. Nothing in it is a measure by variant. */
 export interface BlindJson {

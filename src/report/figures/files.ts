@@ -1,4 +1,5 @@
 import type { Page } from "../page.ts";
+import type { BeforeAfter } from "../sections/changes.ts";
 import type { ChoicesFigure } from "../sections/choices.ts";
 import type { DistributionFigure } from "../sections/distribution.ts";
 import type { FlowFigure, FlowStep } from "../sections/flow.ts";
@@ -14,28 +15,43 @@ export interface FigureFile {
 
 /** Every figure of the page as a file of its own, from the same drawings and words. */
 export function figureFiles(page: Page): FigureFile[] {
-  const { decision, allocation, flow, metrics, afterwards } = page;
-  return [
-    ...(decision.forest === null ? [] : [file("forest", forestSheet(decision.forest))]),
-    ...allocation.flatMap(({ id, drawing }) => (drawing === null ? [] : [file(id, drawnSheet(drawing, 240))])),
-    file("flow", flowSheet(flow)),
-    ...metrics.flatMap(({ distribution, sampling, accrual, days, subgroups, choices }) => [
-      ...(distribution === null ? [] : [file(distribution.id, distributionSheet(distribution))]),
-      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [file(id, drawnSheet(figure, 280))])),
+  const { decision, changes, allocation, flow, metrics, afterwards } = page;
+  const ofEffects: readonly NamedSheet[] = [
+    ...(decision.forest === null ? [] : [{ id: "forest", sheet: forestSheet(decision.forest) }]),
+    ...(changes === null ? [] : [{ id: "before-after", sheet: beforeAfterSheet(changes.figure) }]),
+    ...metrics.flatMap(({ sampling, accrual, days, subgroups, choices }) => [
+      ...sampling.flatMap(({ id, figure }) => (figure === null ? [] : [{ id, sheet: drawnSheet(figure, 280) }])),
       ...[...accrual, ...days].flatMap(({ id, drawing }) =>
-        drawing === null ? [] : [file(id, drawnSheet(drawing, 240))],
+        drawing === null ? [] : [{ id, sheet: drawnSheet(drawing, 240) }],
       ),
-      ...subgroups.flatMap(subgroupFile),
+      ...subgroups.flatMap(subgroupSheet),
       ...choices
         .filter(({ axis }) => axis !== null)
-        .map((figure) => file(figure.id, rowsSheet(figure, CHOICE_COLUMNS))),
+        .map((figure) => ({ id: figure.id, sheet: rowsSheet(figure, CHOICE_COLUMNS) })),
     ]),
-    ...(afterwards?.subgroups ?? []).flatMap(subgroupFile),
+    ...(afterwards?.subgroups ?? []).flatMap(subgroupSheet),
   ];
+  const ofData: readonly NamedSheet[] = [
+    ...allocation.flatMap(({ id, drawing }) => (drawing === null ? [] : [{ id, sheet: drawnSheet(drawing, 240) }])),
+    { id: "flow", sheet: flowSheet(flow) },
+    ...metrics.flatMap(({ distribution }) =>
+      distribution === null ? [] : [{ id: distribution.id, sheet: distributionSheet(distribution) }],
+    ),
+  ];
+  return [...(page.undecidable ? ofEffects.map(warned) : ofEffects), ...ofData].map(({ id, sheet }) => ({
+    name: `figures/${id}.svg`,
+    text: sheetSvg(sheet),
+  }));
 }
 
-function file(id: string, sheet: Sheet): FigureFile {
-  return { name: `figures/${id}.svg`, text: sheetSvg(sheet) };
+interface NamedSheet {
+  readonly id: string;
+  readonly sheet: Sheet;
+}
+
+/** In the report that stands at the head of the section; a file is seen alone. */
+function warned({ id, sheet }: NamedSheet): NamedSheet {
+  return { id, sheet: { ...sheet, note: `This is for finding the fault, not for deciding. ${sheet.note}` } };
 }
 
 const [NAME, PLOT, FIGURES, ASKED] = [0, 300, 620, 815] as const;
@@ -99,11 +115,21 @@ function rowsSheet({ title, reading, rows, axis }: RowsFigure, columns: Columns)
   return { title, note: reading, rows: [...lines, ...last] };
 }
 
-function subgroupFile({ id, title, figure }: SubgroupPart): FigureFile[] {
+function beforeAfterSheet({ title, reading, rows, axis }: BeforeAfter): Sheet {
+  const lines = rows.map(({ metric, run, isNow, ...row }) => ({
+    ...row,
+    choice: metric,
+    stands: run,
+    isPlanned: isNow,
+  }));
+  return rowsSheet({ title, reading, rows: lines, axis }, CHOICE_COLUMNS);
+}
+
+function subgroupSheet({ id, title, figure }: SubgroupPart): NamedSheet[] {
   if (figure === null) return [];
   const rows = figure.rows.map(({ level, ...row }) => ({ ...row, choice: level, isPlanned: false }));
   const { reading, axis, plotHead } = figure;
-  return [file(id, rowsSheet({ title: `${title}: ${plotHead}`, reading, rows, axis }, LEVEL_COLUMNS))];
+  return [{ id, sheet: rowsSheet({ title: `${title}: ${plotHead}`, reading, rows, axis }, LEVEL_COLUMNS) }];
 }
 
 type Drawn = Pick<SamplingFigure, "caption" | "reading" | "drawing">;

@@ -8,7 +8,7 @@ import {
 } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
-import { capital, count, intervalInWords, planPercent } from "../../words/index.ts";
+import { count, intervalInWords, planPercent, quoted } from "../../words/index.ts";
 import { accrual as accrualChart } from "../charts/accrual.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { axisLabel, figures, scaleText } from "../figure-words.ts";
@@ -70,10 +70,10 @@ async function partOf(
   const marks = shown.length === 0 ? [] : incidentMarks(plan, shown, since);
   const isMarked = shown.some(({ day }) => lettersOn(marks, day) !== "");
   const isDrawn = effect.role !== "secondary" && shown.length >= 2;
-  const caption = `${effect.metric}, ${effect.variant} against ${effect.control}: ${what}, as ${many} enrolled`;
+  const caption = `${effect.metric}, ${quoted(effect.variant)} against ${quoted(effect.control)}: ${what}, as ${many} enrolled`;
   return {
     id,
-    title: `${capital(effect.variant)} against ${effect.control}: as ${many} enrolled`,
+    title: `${quoted(effect.variant)} against ${quoted(effect.control)}: as ${many} enrolled`,
     sentences: [
       ...(shown.length === 0 ? [notShown(plan)] : sentences(plan, effect, metric, accrual)),
       ...(isDrawn || !isMarked ? [] : [namesOf(marks)]),
@@ -108,7 +108,7 @@ async function partOf(
 }
 
 const READING =
-  "Line with squares: the difference among all enrolled up to a day, each with the whole follow-up. Dashed: the interval of that day alone. Shaded: the band that holds on all days together. Level line: no difference.";
+  "Line with squares: the difference among all enrolled up to a day, each with the whole follow-up. Dashed: the interval of that day alone. Shaded: the band that holds on all days together. Level line: zero, where the groups do not differ.";
 
 async function drawn(
   plan: Plan,
@@ -159,7 +159,7 @@ function atTheEnd(effect: Effect, metric: Metric, last: AccrualDay | undefined, 
   return `At the end the interval is ${write(last.low, last.high)}, the band ${write(last.bandLow, last.bandHigh)} (both ${confidence}).`;
 }
 
-/** From which day on the band lies on one side of no difference, to the end. */
+/** From which day on the band lies on one side of zero, to the end. */
 function clearFrom(days: readonly AccrualDay[]): string {
   const side = ({ bandLow, bandHigh }: AccrualDay) =>
     bandLow !== null && bandLow > 0 ? "above" : bandHigh !== null && bandHigh < 0 ? "below" : null;
@@ -167,11 +167,12 @@ function clearFrom(days: readonly AccrualDay[]): string {
   const now = last === undefined ? null : side(last);
   if (now !== null) {
     const first = days[days.findLastIndex((day) => side(day) !== now) + 1];
-    return first === undefined ? "" : `From ${dayText(first.day)} on the whole band lies ${now} no difference.`;
+    const since = first === undefined || first === last ? "On the last day" : `From ${dayText(first.day)} to the end`;
+    return `${since} the whole band lies ${now} zero.`;
   }
   return days.some((day) => side(day) !== null)
-    ? "On some days the whole band lay on one side of no difference, at the end it does not."
-    : "No difference lies within the band on every day.";
+    ? "On some days the whole band lay on one side of zero; at the end zero lies within it."
+    : "Zero lies within the band on every day shown.";
 }
 
 function notShown(plan: Plan): string {

@@ -2,7 +2,7 @@ import { plannedShares } from "../../checks/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import { normalCritical } from "../../stats/index.ts";
-import { capital, count, dateText, dayOfEpoch, fixed, percent, plain } from "../../words/index.ts";
+import { count, dateText, dayOfEpoch, fixed, percent, plain, quoted } from "../../words/index.ts";
 import { type AllocationDay, allocation } from "../charts/allocation.ts";
 import { draw } from "../charts/draw.ts";
 import type { AccrualPart } from "./accrual.ts";
@@ -47,7 +47,7 @@ async function partOf(
     return [{ day, share: (enrolled[v] ?? 0) / n, low, high }];
   });
   const beyond = shown.filter(({ share, low, high }) => share < low || share > high).length;
-  const caption = `Share of the ${many} enrolled that were given ${variant}, by day`;
+  const caption = `Share of the ${many} enrolled that were given ${quoted(variant)}, by day`;
   const outside = beyond === 0 ? "none lies" : `${beyond} ${beyond === 1 ? "lies" : "lie"}`;
   const found = `Planned were ${percent(planned)}; of ${shown.length} days ${outside} beyond what chance allows on 99 of 100.`;
   const spec = allocation(shown, planned, {
@@ -57,7 +57,7 @@ async function partOf(
   });
   return {
     id,
-    title: `${capital(variant)}: share of the ${many} enrolled, by day`,
+    title: `${quoted(variant)}: share of the ${many} enrolled, by day`,
     sentences: [found, "Whether all days together split as planned is judged by the check above."],
     drawing: {
       caption,

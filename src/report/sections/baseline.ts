@@ -1,5 +1,5 @@
 import { covariates } from "../../checks/index.ts";
-import { levelText } from "../../decision/index.ts";
+import { levelHead } from "../../decision/index.ts";
 import type { Reduction, SubgroupColumn } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import type { ArmFigures } from "../../stats/index.ts";
@@ -8,12 +8,15 @@ import { capital, count, fixed, percent, plural, quoted } from "../../words/inde
 import { NONE, sideBySide } from "../effect-text.ts";
 
 /**
- * The arms side by side before enrolment (CONSORT 2010 item 15, 2025 item 25): one row a quantity, then one a level of each
- * column of subgroups.
+ * The arms side by side before enrolment (CONSORT 2010 item 15, 2025 item 25): one row a quantity, then under each column of
+ * subgroups one a level.
  */
 export interface BaselineTable {
   readonly variants: readonly string[];
   readonly rows: readonly BaselineRow[];
+  readonly columns: readonly { readonly head: string; readonly rows: readonly BaselineRow[] }[];
+  /** Of cells in a row. */
+  readonly width: number;
   readonly reading: string;
 }
 export interface BaselineRow {
@@ -32,27 +35,31 @@ export interface BaselineCell {
 /** Null where the plan names nothing that was known before enrolment. */
 export function baselineTable(plan: Plan, reduction: Reduction): BaselineTable | null {
   const known = covariateRows(plan, reduction);
-  const levels = reduction.facts.subgroups.flatMap((column) => levelRows(plan, column));
-  if (known.length + levels.length === 0) return null;
+  const columns = reduction.facts.subgroups
+    .map((column) => ({ head: `${quoted(column.column)} at enrolment`, rows: levelRows(plan, column) }))
+    .filter(({ rows }) => rows.length > 0);
+  if (known.length + columns.length === 0) return null;
   const { many } = plan.unitCalled;
   const readings = [
     ...(known.length === 0
       ? []
       : [`Mean with its standard deviation, or share, over the ${many} counted that have a value.`]),
-    ...(levels.length === 0
+    ...(columns.length === 0
       ? []
       : [`Of a value at enrolment: the share of all ${many} enrolled with that variant, counted or not.`]),
     "Standardised difference: over the standard deviation of both groups, so that it does not grow with their size; beyond 0.1 it is worth a look. Whether chance explains a difference is judged in section 3.",
   ];
   return {
     variants: plan.variants.map(({ name }) => name),
-    rows: [...known, ...levels],
+    rows: known,
+    columns,
+    width: plan.variants.length + 2,
     reading: readings.join(" "),
   };
 }
 
 /** The cells of a level's effect hold the counted alone; randomisation made those who are enrolled alike. */
-function levelRows(plan: Plan, { column, levels }: SubgroupColumn): BaselineRow[] {
+function levelRows(plan: Plan, { levels }: SubgroupColumn): BaselineRow[] {
   const control = plan.variants.findIndex(({ isControl }) => isControl);
   const { one, many } = plan.unitCalled;
   const all = plan.variants.map((_, v) => levels.reduce((sum, { enrolled }) => sum + (enrolled[v] ?? 0), 0));
@@ -60,7 +67,7 @@ function levelRows(plan: Plan, { column, levels }: SubgroupColumn): BaselineRow[
     const arms = all.map((of, v) => ({ units: enrolled[v] ?? 0, of }));
     const own = arms[control];
     return {
-      what: `${quoted(column)} at enrolment: ${levelText(level)}`,
+      what: levelHead(level),
       cells: arms.map(({ units, of }) => ({
         figure: of === 0 ? NONE : percent(units / of),
         beside: plural(units, one, many),

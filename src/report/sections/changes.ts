@@ -51,6 +51,7 @@ interface LineRow {
 }
 /** Each estimate twice, one above the other, on one axis. */
 export interface BeforeAfter {
+  readonly title: string;
   readonly reading: string;
   readonly rows: readonly BeforeAfterRow[];
   readonly axis: Drawing | null;
@@ -152,6 +153,7 @@ async function beforeAfter({ effects }: ChangesJson, plan: Plan, before: string)
     }
   }
   return {
+    title: "Each estimate before and after",
     reading: `Each difference from the control, ${planPercent(plan.decision.confidence)} interval now, in percent of the control\u2019s level. Upper line of each pair, dashed: the ${before}. Lower line: now.`,
     rows,
     axis:

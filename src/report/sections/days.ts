@@ -1,6 +1,6 @@
 import { absolute, type DaysSince, deciding, type Effect, metricOf } from "../../decision/index.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
-import { capital, count, estimateInWords, intervalInWords, planPercent, plural, pText } from "../../words/index.ts";
+import { count, estimateInWords, intervalInWords, planPercent, plural, pText, quoted } from "../../words/index.ts";
 import { days as daysChart } from "../charts/days.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { sideBySide } from "../effect-text.ts";
@@ -25,10 +25,10 @@ export async function dayParts(
 async function partOf(plan: Plan, effect: Effect, found: DaysSince, id: string): Promise<AccrualPart> {
   const metric = metricOf(effect, plan);
   const what = scaleText(absolute(effect, metric).scale).replace("Difference", "difference");
-  const caption = `${effect.metric}, ${effect.variant} against ${effect.control}: ${what}, by day since enrolment`;
+  const caption = `${effect.metric}, ${quoted(effect.variant)} against ${quoted(effect.control)}: ${what}, by day since enrolment`;
   return {
     id,
-    title: `${capital(effect.variant)} against ${effect.control}: by day since enrolment`,
+    title: `${quoted(effect.variant)} against ${quoted(effect.control)}: by day since enrolment`,
     sentences: sentences(plan, effect, metric, found),
     drawing: { caption, reading: READING, drawing: await drawn(plan, effect, metric, found, caption, id) },
     caption,

@@ -3,15 +3,9 @@ import type { Effect } from "../../decision/index.ts";
 import type { Reduction, SizeTable } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import { count, list, number, percent, plural } from "../../words/index.ts";
-import {
-  type DrawnShape,
-  distributionStrip,
-  type SizeAxis,
-  sizeAxis,
-  sizeScale,
-  tails,
-} from "../charts/distribution.ts";
+import { type DrawnShape, distributionStrip, sizeAxis, tails } from "../charts/distribution.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
+import { type SizeAxis, sizeScale } from "../charts/size-axis.ts";
 import { lineStyle, theme } from "../charts/theme.ts";
 import { drawnEffects } from "../drawn.ts";
 import { controlOf } from "../plan-words.ts";

@@ -9,7 +9,7 @@ import {
 } from "../../decision/index.ts";
 import type { Amount, Plan, Role } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
-import { capital, planPercent, signedPercent } from "../../words/index.ts";
+import { planPercent, quoted, signedPercent } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type ForestAxis, type ForestRow, forestAxis, forestScale, forestStrip } from "../charts/forest.ts";
 import { lineStyle } from "../charts/theme.ts";
@@ -97,7 +97,7 @@ export async function forestTable(effects: readonly Effect[], plan: Plan): Promi
   const several = others.length > 1;
   const variant = several ? "variant" : (others[0]?.name ?? "variant");
   return {
-    title: `${several ? "Each variant" : capital(variant)} against ${control}: the difference in percent of the level with ${control}`,
+    title: `${several ? "Each variant" : quoted(variant)} against ${quoted(control)}: the difference in percent of the level with ${quoted(control)}`,
     reading: readingText(
       plan,
       effects,

@@ -29,7 +29,7 @@ export function groupMethods(
     {
       when: subgroups.length > 0 || afterwards.subgroups.length > 0,
       name: "Subgroups",
-      how: `${many[0]?.toUpperCase()}${many.slice(1)} are divided by a value of the row that enrolled them; the 12 values with most of them stand by themselves. Whether the differences differ is told by Cochran\u2019s Q over the levels that are large enough. A level is said to point against the whole only where its interval at the confidence shared out over all levels leaves no difference out on the other side. p is adjusted over all levels. Adjusted measures keep the slope of the whole, ratios take the level\u2019s own.`,
+      how: `${many[0]?.toUpperCase()}${many.slice(1)} are divided by a value of the row that enrolled them; the 12 values with most of them stand by themselves. Whether the differences differ is told by Cochran\u2019s Q over the levels that are large enough. A level is said to point against the whole only where its interval at the confidence shared out over all levels lies wholly on the other side of zero. p is adjusted over all levels. Adjusted measures keep the slope of the whole, ratios take the level\u2019s own.`,
       source:
         "Cochran 1954, Biometrics 10, 101-129; Benjamini and Hochberg 1995, Journal of the Royal Statistical Society B 57, 289-300",
     },

@@ -1,12 +1,12 @@
 import { anyIsEnough, type Effect } from "../../decision/index.ts";
-
 import { type Plan, sealDifference, sealOf } from "../../plan/index.ts";
 import { list, planPercent } from "../../words/index.ts";
 import { FROM_CELLS, REPLACES } from "../history.ts";
 import type { ReportInputs } from "../types.ts";
+import { cautions } from "./cautions.ts";
 import { type FromWhat, fromWhat } from "./from-what.ts";
 import { groupMethods } from "./group-methods.ts";
-import { lookCaution, lookMethods } from "./look-methods.ts";
+import { lookMethods } from "./look-methods.ts";
 import { normalityMethods } from "./normality-methods.ts";
 
 /** Section 7: how it was computed, from which sources, of what, and what it cannot say. */
@@ -207,18 +207,4 @@ function idOf(name: string): string {
 
 function hasNoSpread({ control, variant }: Effect["contrast"]): boolean {
   return control.sd === null || variant.sd === null;
-}
-
-/** METHODS 9. */
-function cautions(plan: Plan): string[] {
-  const secondary = plan.metrics.filter((metric) => metric.role === "secondary").map(({ name }) => name);
-  return [
-    "Statistical evidence is not the whole decision: cost, law, strategy and the people concerned are not in the figures.",
-    "Experiments on people need the consent and the privacy that the law of the place asks for; event logs are personal data.",
-    "Not for clinical, safety or other regulated decisions: these need a registered protocol and a licensed practitioner.",
-    lookCaution(plan),
-    secondary.length === 0
-      ? "What was not named beforehand as deciding can suggest; it does not decide."
-      : `Measures for information suggest, they do not decide: ${list(secondary)}.`,
-  ];
 }

@@ -1,21 +1,13 @@
-import { anyIsEnough, because, deciding, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
+import { anyIsEnough, deciding, type Effect, ruleInWords, ruleOf } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Metric, Plan, Role, Summary } from "../../plan/types.ts";
-import type { ArmFigures, Method } from "../../stats/types.ts";
-import { capital, count, type Interval, list, percentile, plain, plural, quoted } from "../../words/index.ts";
-import {
-  bareText,
-  effectText,
-  levelsText,
-  NONE,
-  PURPOSE,
-  pOrNone,
-  type Signed,
-  sideBySide,
-  verdictText,
-} from "../effect-text.ts";
+import type { Method } from "../../stats/types.ts";
+import { type Interval, list } from "../../words/index.ts";
+import { bareText, effectText, PURPOSE, pOrNone, type Signed, verdictText } from "../effect-text.ts";
 import { measureText } from "../plan-words.ts";
-import { adjustedNotes, unadjusted } from "./adjusted.ts";
+import { unadjusted } from "./adjusted.ts";
+import { type ArmText, armColumns, armRows } from "./metric-arms.ts";
+import { metricNotes } from "./metric-notes.ts";
 
 /** Section 5: one part a metric, with its arms and its effects. */
 export interface MetricSection {
@@ -36,10 +28,6 @@ export interface MetricSection {
   readonly effects: readonly EffectRow[];
   /** For what p is adjusted, as the head of its column; null where it is not. */
   readonly adjustedFor: string | null;
-}
-export interface ArmText {
-  readonly variant: string;
-  readonly cells: readonly string[];
 }
 export interface EffectRow {
   readonly variant: string;
@@ -85,7 +73,7 @@ export function metricSections(plan: Plan, reduction: Reduction, effects: readon
       familyTerm: familyTerm(metric, plan),
       measure: measureText(metric, plan),
       rule: ruleText(metric),
-      notes: notes(metric, plan, reduction, own),
+      notes: metricNotes(metric, plan, reduction, own),
       unit: metric.summary === "proportion" ? "percentage points" : (metric.unitOfMeasure ?? ""),
       armColumns: armColumns(metric, plan),
       arms: armRows(metric, plan, own),
@@ -138,94 +126,6 @@ function ruleText(metric: Metric): string {
   if (rule === null) return "The plan asks for any proven gain.";
   const words = ruleInWords(metric, rule);
   return metric.role === "primary" ? `The plan asks for at least ${words}.` : `The plan tolerates at most ${words}.`;
-}
-
-/** What the reader must know to take the figures as they are meant. */
-function notes(metric: Metric, plan: Plan, reduction: Reduction, effects: readonly Effect[]): string[] {
-  const cells = reduction.metrics.find((candidate) => candidate.metric === metric.name);
-  if (cells === undefined) throw new Error(`the reduction has no cells of the metric "${metric.name}"`);
-  const { one, many } = plan.unitCalled;
-  const total = (counts: readonly number[]) => counts.reduce((a, b) => a + b, 0);
-  const notes: string[] = [];
-  if (cells.cap !== null) {
-    const unit = metric.unitOfMeasure === null ? "" : ` ${metric.unitOfMeasure}`;
-    const changed = plan.variants
-      .map(({ name }, v) => `${count(cells.cap?.units[v] ?? 0)} with ${quoted(name)}`)
-      .join(", ");
-    notes.push(
-      `The cap stands at ${plain(Number(cells.cap.value))}${unit}; it changed ${plural(total(cells.cap.units), one, many)}: ${changed}.`,
-    );
-  }
-  if (total(cells.leftOut) > 0) {
-    const by = plan.variants.map(({ name }, v) => `${count(cells.leftOut[v] ?? 0)} with ${quoted(name)}`).join(", ");
-    notes.push(`${capital(plural(total(cells.leftOut), one, many))} without a value left out: ${by}.`);
-  }
-  if (cells.countedWithoutNumber > 0) {
-    notes.push(
-      `${plural(cells.countedWithoutNumber, "counted row", "counted rows")} held no number and added nothing.`,
-    );
-  }
-  notes.push(...adjustedNotes(metric, plan, effects));
-  for (const effect of effects) {
-    const absent = absentText(effect, plan);
-    if (absent !== null && !notes.includes(absent)) notes.push(absent);
-  }
-  return notes;
-}
-
-/** Why a figure does not exist, as a sentence. */
-function absentText(effect: Effect, plan: Plan): string | null {
-  const contrast = deciding(effect);
-  const { control } = effect;
-  const { one, many } = plan.unitCalled;
-  const { low, high } = contrast.difference;
-  if (contrast.why !== null) return `There is no interval, since ${because(contrast.why.absent, one, many)}.`;
-  if (contrast.difference.method === "quantile" && (low === null || high === null)) {
-    return `One end of the interval is open, since ${because("few-for-rank", one, many)}.`;
-  }
-  if (!("absent" in contrast.relative)) return null;
-  return `The difference relative to ${quoted(control)} is not shown, since ${because(contrast.relative.absent, one, many)}.`;
-}
-
-function armColumns(metric: Metric, plan: Plan): string[] {
-  const unit = metric.unitOfMeasure === null ? "" : `, ${metric.unitOfMeasure}`;
-  const many = capital(plan.unitCalled.many);
-  if (metric.summary === "proportion") return [many, "With", "Share"];
-  if (metric.summary === "ratio-of-totals") return [many, `Total${unit}`, "Ratio", "Standard deviation of the score"];
-  if (metric.quantile !== null) {
-    return [many, `${capital(percentile(metric.quantile))}${unit}`, `Smallest${unit}`, `Largest${unit}`];
-  }
-  return [many, `Total${unit}`, `Mean${unit}`, `Standard deviation${unit}`, `Smallest${unit}`, `Largest${unit}`];
-}
-
-function armRows(metric: Metric, plan: Plan, effects: readonly Effect[]): ArmText[] {
-  const arms = plan.variants.flatMap(({ name, isControl }): { name: string; arm: ArmFigures }[] => {
-    if (isControl) return effects[0] === undefined ? [] : [{ name, arm: effects[0].contrast.control }];
-    const own = effects.find((effect) => effect.variant === name);
-    return own === undefined ? [] : [{ name, arm: own.contrast.variant }];
-  });
-  const column = (pick: (arm: ArmFigures) => number | null) => sideBySide(arms.map(({ arm }) => pick(arm)));
-  const units = arms.map(({ arm }) => count(arm.units));
-  const totals = column((arm) => arm.total);
-  if (metric.summary === "proportion") {
-    const { levels } = levelsText(
-      arms.map(({ arm }) => arm.mean),
-      metric,
-    );
-    return arms.map(({ name }, i) => ({
-      variant: name,
-      cells: [units[i], totals[i], levels[i]].map((cell) => cell ?? NONE),
-    }));
-  }
-  const means = column((arm) => arm.mean);
-  const sds = column((arm) => arm.sd);
-  const ends = [column((arm) => arm.smallest), column((arm) => arm.largest)];
-  const columns = {
-    mean: [units, totals, means, sds, ...ends],
-    "ratio-of-totals": [units, totals, means, sds],
-    quantile: [units, means, ...ends],
-  }[metric.summary];
-  return arms.map(({ name }, i) => ({ variant: name, cells: columns.map((texts) => texts[i] ?? NONE) }));
 }
 
 /** One row an effect; where it is adjusted that one decides, and the unadjusted stands under it. */

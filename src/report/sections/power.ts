@@ -138,7 +138,7 @@ function reading(plan: Plan, effects: readonly Effect[]): string[] {
     : "";
   const overstated = effects.some(({ power }) => power.exaggeration !== null)
     ? [
-        "Overstated: if the true effect were just what was asked for, the tests of the size counted whose interval excludes no difference would report it, on average, so many times as large.",
+        "Overstated: if the true effect were just what was asked for, the tests of the size counted whose interval does not hold zero would report it, on average, so many times as large.",
       ]
     : [];
   const { many } = plan.unitCalled;

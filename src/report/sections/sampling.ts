@@ -19,7 +19,6 @@ import {
 } from "../../stats/index.ts";
 import {
   atLeast,
-  capital,
   count,
   fixed,
   type Interval,
@@ -27,6 +26,7 @@ import {
   list,
   percent,
   pText,
+  quoted,
 } from "../../words/index.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type SamplingRow, sampling } from "../charts/sampling.ts";
@@ -67,7 +67,7 @@ export async function samplingParts(
     const id = `sampling-${i + 1}`;
     found.get(effect.metric)?.push({
       id,
-      title: `${capital(effect.variant)} against ${effect.control}: how near the normal curve`,
+      title: `${quoted(effect.variant)} against ${quoted(effect.control)}: how near the normal curve`,
       sentences: sentences(effect, plan, isDecided ? effects : null),
       notes: [...drawnNotes(effect, plan), ...unitNotes(effect, plan, units)],
       figure: drawn.has(effect) ? await figure(effect, plan, id) : null,
@@ -168,7 +168,7 @@ async function figure(effect: Effect, plan: Plan, id: string): Promise<SamplingF
   const bootstrap = effect.resampled?.bootstrap;
   const draws = bootstrap === undefined || isNotDrawn(bootstrap) ? 0 : bootstrap.draws;
   const tail = normalUpperTail(critical);
-  const caption = `${effect.metric}, ${effect.variant} against ${effect.control}: ${count(draws)} draws against the normal curve`;
+  const caption = `${effect.metric}, ${quoted(effect.variant)} against ${quoted(effect.control)}: ${count(draws)} draws against the normal curve`;
   const rows = shown.map(
     ({ share, histogram, tails }): SamplingRow => ({
       label: SIZES[share]?.label ?? "",

@@ -1,7 +1,7 @@
 import {
   type Effect,
   heterogeneitySentence,
-  levelText,
+  levelHead,
   measure,
   ofLevel,
   type Subgroup,
@@ -10,7 +10,7 @@ import {
 import type { Plan } from "../../plan/types.ts";
 import { isAbsent } from "../../stats/index.ts";
 import type { Contrast } from "../../stats/types.ts";
-import { capital, count, type Interval, plural, quoted, type Scale } from "../../words/index.ts";
+import { count, type Interval, plural, quoted, type Scale } from "../../words/index.ts";
 import { type ChoiceMark, choiceAxis, choiceStrip } from "../charts/choices.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
@@ -71,7 +71,7 @@ async function partOf(plan: Plan, effect: Effect, subgroup: Subgroup, all: numbe
     ],
     columns: [effect.variant, effect.control, ...NUMBERS.map(([head]) => head)],
     numbers: subgroup.levels.map((row) => ({
-      level: capital(levelText(row.level)),
+      level: levelHead(row.level),
       cells: [
         count(row.units.variant),
         count(row.units.control),
@@ -104,7 +104,7 @@ async function figureOf(plan: Plan, effect: Effect, { levels }: Subgroup, id: st
   for (const [i, row] of levels.entries()) {
     const strip = choiceStrip(drawn[i] ?? null, own.interval?.estimate ?? null, null, axis);
     rows.push({
-      level: capital(levelText(row.level)),
+      level: levelHead(row.level),
       drawing: known.length === 0 ? null : await draw(strip, `${id}-${i + 1}`, null),
       ...shownText(row, effect, plan),
       stands: standsText(row, effect, plan),
