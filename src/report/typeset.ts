@@ -42,8 +42,9 @@ export function withoutControls(text: string): string {
   return text.replace(/[^\P{Cc}\n\t]|[\u202a-\u202e\u2066-\u2069]/gu, "\ufffd");
 }
 
+/** "list" and group's as a typesetter writes them. */
 export function quotes(text: string): string {
-  return text.replace(/"([^"]*)"/g, "\u201c$1\u201d");
+  return text.replace(/"([^"]*)"/g, "\u201c$1\u201d").replace(/(?<=\p{L})'(?=\p{L})|(?<=s)'(?= )/gu, "\u2019");
 }
 
 export function unbroken(text: string): string {

@@ -132,7 +132,7 @@ describe("page one", () => {
     const { html } = await renderReport(farFromNormal);
     const first = textOf(sectionOf(html, "decision"));
     expect(first).toMatch(
-      /what matters most: Support contacts: one visitor with .* holds 31\.0% of its group's spread \(of the sum of squares about the mean\), so no interval for it can be relied on\. Support contacts: the nominal 2\.5% tails are about 7\.1% \(the interval wholly below the truth\) and 0\.40% \(wholly above\), off by more than half\. The corrected interval is 4\.1% fewer to 6\.0% more, the normal one 6\.1% fewer to 3\.9% more; the conclusion changes: by the corrected one, not settled\./,
+      /what matters most: Support contacts: one visitor with .* holds 31\.0% of its group’s spread \(of the sum of squares about the mean\), so no interval for it can be relied on\. Support contacts: the nominal 2\.5% tails are about 7\.1% \(the interval wholly below the truth\) and 0\.40% \(wholly above\), off by more than half\. The corrected interval is 4\.1% fewer to 6\.0% more, the normal one 6\.1% fewer to 3\.9% more; the conclusion changes: by the corrected one, not settled\./,
     );
   });
 

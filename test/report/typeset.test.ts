@@ -9,6 +9,11 @@ describe("a text of the page", () => {
     expect(quotes('a lone " stays')).toBe('a lone " stays');
   });
 
+  it("has a curly apostrophe within a word and behind a plural, and leaves other strokes alone", () => {
+    expect(quotes("The groups' values and each group's own")).toBe("The groups\u2019 values and each group\u2019s own");
+    expect(quotes("'a' of 5' 3")).toBe("'a' of 5' 3");
+  });
+
   it("does not break inside a p-value or before the word interval", () => {
     expect(unbroken("as uneven (p < 0.0001), or p = 0.03, on 1 map = 2")).toBe(
       "as uneven (p\u00a0<\u00a00.0001), or p\u00a0=\u00a00.03, on 1 map = 2",
