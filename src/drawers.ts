@@ -24,12 +24,17 @@ export async function withDrawers<Of>(
   { threads = availableParallelism(), signal }: DrawOptions,
   use: (draw: (toDraw: ToDraw) => Resampled | Promise<Resampled>) => Promise<Of>,
 ): Promise<Of> {
+  signal?.throwIfAborted();
   const draws = toDraw.reduce((sum, of) => sum + (of?.draws ?? 0), 0);
   if (draws < MANY || threads < 2 || !existsSync(WORKER)) return use(resampled);
   const pool = new Tinypool({ filename: WORKER.href, minThreads: threads, maxThreads: threads });
+  // One listener for all that is drawn: a signal warns of more than ten.
+  const stop = () => void pool.destroy();
+  signal?.addEventListener("abort", stop);
   try {
-    return await use((of) => pool.run(of, { name: resampled.name, ...(signal === undefined ? {} : { signal }) }));
+    return await use((of) => pool.run(of, { name: resampled.name }));
   } finally {
+    signal?.removeEventListener("abort", stop);
     await pool.destroy();
   }
 }

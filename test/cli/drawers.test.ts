@@ -21,7 +21,7 @@ function toDraw(draws: number): ToDraw {
   };
 }
 
-const many = Array.from({ length: 10 }, () => toDraw(4000));
+const many = Array.from({ length: 12 }, () => toDraw(4000));
 let withDrawers: typeof here;
 
 beforeAll(async () => {
@@ -47,10 +47,22 @@ describe("draws in threads", () => {
         expect(await found).toEqual(resampled(one));
         return !(found instanceof Promise);
       });
-    expect(await isHere(many.slice(1), withDrawers)).toBe(true);
+    expect(await isHere(many.slice(0, 9), withDrawers)).toBe(true);
     expect(await isHere(many, withDrawers, 1)).toBe(true);
     expect(await isHere(many, here)).toBe(true);
     expect(await isHere(many, withDrawers)).toBe(false);
+  });
+
+  it("warn of nothing, however many listen to one signal", async () => {
+    const warnings: string[] = [];
+    const listen = ({ name }: Error) => warnings.push(name);
+    process.on("warning", listen);
+    await withDrawers(many, { threads: 2, signal: new AbortController().signal }, (draw) =>
+      Promise.all(many.map(draw)),
+    );
+    await new Promise(setImmediate);
+    process.off("warning", listen);
+    expect(warnings).toEqual([]);
   });
 
   it("end when the run is stopped", async () => {
@@ -61,5 +73,7 @@ describe("draws in threads", () => {
       return drawn;
     });
     await expect(found).rejects.toThrow();
+    const again = withDrawers(many, { threads: 2, signal: stop.signal }, (draw) => Promise.all(many.map(draw)));
+    await expect(again).rejects.toThrow("aborted");
   });
 });
