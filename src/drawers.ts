@@ -9,8 +9,9 @@ export interface DrawOptions {
   readonly signal?: AbortSignal | undefined;
 }
 
-/** Fewer draws than this in all are made sooner than threads have started. */
+/** Fewer draws than this in all are made sooner than threads have started; one thread more for each so many. */
 const MANY = 40_000;
+const FOR_A_THREAD = 10_000;
 
 // There once it is compiled. Run from its source, or bundled into another program, the draws are made here.
 const WORKER = new URL("./stats/resampled.js", import.meta.url);
@@ -27,7 +28,8 @@ export async function withDrawers<Of>(
   signal?.throwIfAborted();
   const draws = toDraw.reduce((sum, of) => sum + (of?.draws ?? 0), 0);
   if (draws < MANY || threads < 2 || !existsSync(WORKER)) return use(resampled);
-  const pool = new Tinypool({ filename: WORKER.href, minThreads: threads, maxThreads: threads });
+  const most = Math.min(threads, Math.floor(draws / FOR_A_THREAD));
+  const pool = new Tinypool({ filename: WORKER.href, minThreads: most, maxThreads: most });
   // One listener for all that is drawn: a signal warns of more than ten.
   const stop = () => void pool.destroy();
   signal?.addEventListener("abort", stop);
