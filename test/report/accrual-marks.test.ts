@@ -34,7 +34,7 @@ describe("incidents in the figure of the effect as units enrolled", () => {
   it("are named under it, and told where they stand to those who do not see it", async () => {
     const [part] = await partsOf(meanwhile);
     expect(part?.drawing?.reading).toContain(
-      "Level line: no difference. Dotted upright with a letter: so many visitors",
+      "Level line: zero, where the groups do not differ. Dotted upright with a letter: so many visitors",
     );
     expect(part?.drawing?.reading).toMatch(
       / Incidents: a, "payment outage", 4 March 2026; b, "strike", 7 to 9 March 2026\.$/,
@@ -70,7 +70,7 @@ describe("incidents in the figure of the effect as units enrolled", () => {
     const [part] = await partsOf(grouped);
     expect(part?.columns).toHaveLength(6);
     expect(part?.rows[0]?.cells).toHaveLength(6);
-    expect(part?.drawing?.reading).toMatch(/Level line: no difference\.$/);
+    expect(part?.drawing?.reading).toMatch(/Level line: zero, where the groups do not differ\.$/);
     expect(part?.drawing?.drawing.svg).not.toMatch(/Marked|stroke-dasharray="1\.5,3"/);
   });
 
@@ -88,7 +88,7 @@ describe("incidents in the figure of the effect as units enrolled", () => {
     expect(begun).not.toContain('stroke-dasharray="1.5,3"');
     const before = (await partsOf(during(1, 1, 1)))[0];
     expect(before?.drawing?.reading).toMatch(
-      /no difference\. Incident: a, "payment outage", 1 March 2026, before the first day shown\.$/,
+      /the groups do not differ\. Incident: a, "payment outage", 1 March 2026, before the first day shown\.$/,
     );
     expect(before?.drawing?.drawing.svg).not.toMatch(/Marked|>a<\/text>/);
   });
