@@ -2,15 +2,15 @@ import type { ByVariant, Reduction } from "../engine/types.ts";
 import type { Metric, Plan } from "../plan/types.ts";
 import { count, percent } from "../words/index.ts";
 import { armsAlike } from "./arms.ts";
-import { asCheck, type Finding } from "./finding.ts";
+import { asCheck, type Finding, passed } from "./finding.ts";
 import { analysedUnits, sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
-import type { Check } from "./types.ts";
+import type { Check, Figure } from "./types.ts";
 import { groupShares, ofDifference, perVariant, units } from "./words.ts";
 
 /**
- * Metrics that leave out units without a value, one part each, named like the metric: a caution in any case, since only
- * some of those enrolled are compared; a failure where the share left out differs by arm.
+ * Metrics that leave out units without a value, one part each, named like the metric: a caution where there are any, since
+ * only some of those enrolled are compared; a failure where the share left out differs by arm.
  */
 export function withoutRows(plan: Plan, reduction: Reduction): Check | null {
   const analysed = analysedUnits(reduction);
@@ -30,6 +30,7 @@ export function withoutRowsTogether(plan: Plan, reduction: Reduction): Check | n
     const leftOut = reduction.metrics[i]?.leftOut;
     if (metric.withoutRows !== "leave-out" || leftOut === undefined) return [];
     const share = sum(leftOut) / counted;
+    if (sum(leftOut) === 0) return [nobody(plan, metric, 0)];
     return [
       {
         about: metric.name,
@@ -48,17 +49,22 @@ function leftOutSentence(plan: Plan, metric: Metric, n: number, counted: number)
   return `${metric.name}: ${units(plan, n)} of ${count(counted)} (${percent(n / counted)}) without a value ${n === 1 ? "is" : "are"} left out`;
 }
 
+function nobody({ unitCalled: { one } }: Plan, { name }: Metric, none: Figure): Finding {
+  return passed(name, `${name}: no ${one} is left out, each has a value.`, { units: none, share: 0 });
+}
+
 function onlyWithValue({ unitCalled }: Plan, { name }: Metric): string {
   return `Read ${name} as a statement about ${unitCalled.many} with a value only: the variant may change who has one.`;
 }
 
 function judge(plan: Plan, metric: Metric, leftOut: ByVariant, analysed: ByVariant): Finding {
   const n = sum(leftOut);
+  if (n === 0) return nobody(plan, metric, perVariant(plan, leftOut));
   const share = n / sum(analysed);
   const p = armsAlike(leftOut, analysed);
   const differ = p === null ? "pass" : byP(p);
   const left = leftOutSentence(plan, metric, n, sum(analysed));
-  const byVariant = n === 0 ? "" : `: ${groupShares(plan, leftOut, analysed)}`;
+  const byVariant = `: ${groupShares(plan, leftOut, analysed)}`;
   const chance = p === null || differ === "pass" ? "" : ` ${ofDifference(p)}`;
   return {
     about: metric.name,

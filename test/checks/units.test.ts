@@ -124,7 +124,17 @@ describe("without-rows", () => {
   it("has a part for each metric that leaves units out, named like it", () => {
     const found = withoutRows(leaving, reductionOf(leaving));
     expect(found?.parts.map((part) => part.about)).toEqual(["Page time", "Slowest page"]);
-    expect(found?.result).toBe("caution");
+  });
+
+  // a caution told of "0 units of 2,000 (0%)", and asked to read the metric as one of some of them
+  it("passes where nobody is left out, and cautions from the first", () => {
+    const of = (left: number) => withoutRows(leaving, reductionOf(leaving, { leftOut: { "Page time": [left, 0] } }));
+    expect(of(0)).toMatchObject({
+      result: "pass",
+      sentence: "Page time: no visitor is left out, each has a value.",
+      remedy: "",
+    });
+    expect(of(1)?.result).toBe("caution");
   });
 
   // R 4.2.2: as in rows.test.ts: 100 against 139 and 140 of 5,000: 0.01066775438, 0.008960910391; against 151 and 152:
@@ -138,7 +148,7 @@ describe("without-rows", () => {
     const shape = { enrolled: [5000, 5000], leftOut: { "Slowest page": [100, other] } };
     const found = withoutRows(leaving, reductionOf(leaving, shape));
     expect(found?.result).toBe(result);
-    expect(found?.parts[0]).toMatchObject({ about: "Page time", result: "caution" });
+    expect(found?.parts[0]).toMatchObject({ about: "Page time", result: "pass" });
     expect(found?.parts[1]?.figures.p).toBeCloseTo(p, 10);
     expect(found?.parts[1]?.figures.units).toEqual({ list: 100, calendar: other });
     expect(found?.parts[1]?.sentence.includes("Chance alone")).toBe(p < 0.01);

@@ -88,7 +88,7 @@ describe("incidents in the figure of the effect as units enrolled", () => {
     expect(begun).not.toContain('stroke-dasharray="1.5,3"');
     const before = (await partsOf(during(1, 1, 1)))[0];
     expect(before?.drawing?.reading).toMatch(
-      /do not differ\. Incident: a, "payment outage", 1 March 2026, before the first day shown\.$/,
+      /the groups do not differ\. Incident: a, "payment outage", 1 March 2026, before the first day shown\.$/,
     );
     expect(before?.drawing?.drawing.svg).not.toMatch(/Marked|>a<\/text>/);
   });

@@ -45,6 +45,21 @@ describe("the picture of how an arm's values lie", async () => {
     for (const svg of drawn) expect(textOf(svg)).not.toMatch(/list|calendar|Fare/);
   });
 
+  // "0.2000" stood beside "1" on an axis of seconds
+  it("writes the round numbers of its axis with their own digits", async () => {
+    const quarters = [-12, -8, -4, 0, 4]; // an eighth to two
+    const sizes = {
+      variant: [0, 0, 0, 0, 0],
+      sign: [1, 1, 1, 1, 1],
+      quarter: quarters,
+      units: [9, 9, 9, 9, 9],
+    };
+    const metrics = adopt.reduction.metrics.map((own) => (own.sizes === null ? own : { ...own, sizes }));
+    const found = await distributionFigures(adopt.plan, { ...adopt.reduction, metrics }, adopt.effects);
+    const axis = found.get("Fare per visitor")?.axis.svg ?? "";
+    expect(textOf(axis).trim().split(/\s+/)).toEqual(["0", "0.2", "0.5", "1", "2"]);
+  });
+
   it("stands on the page with several variants too", async () => {
     const text = textOf((await renderReport(several)).html);
     expect(text).toContain("visitors by size of their value");

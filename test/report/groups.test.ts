@@ -5,7 +5,7 @@ import { reportJson } from "../../src/report/index.ts";
 import { page } from "../../src/report/page.ts";
 import { accrualParts } from "../../src/report/sections/accrual.ts";
 import { isoDay, weekdaysSentence } from "../../src/report/sections/weekdays.ts";
-import { adopt } from "./cases.ts";
+import { adopt, several } from "./cases.ts";
 import { accrualOf, grouped } from "./groups.ts";
 
 const metricOf = async (name: string) => (await page(grouped)).metrics.find((metric) => metric.name === name);
@@ -69,6 +69,15 @@ describe("the effect as units enrolled", () => {
     );
     expect(await said([0.001, 0.03])).toBe("On the last day the whole band lies above zero.");
     expect(await said([0.001, -0.03, -0.03])).toBe("From 3 March 2026 to the end the whole band lies below zero.");
+  });
+  // with several variants or looks the interval that decides is another one, and the two stand on one page
+  it("says that the interval at the end is of that day alone, and whose planned size the band is narrowest at", async () => {
+    const accruals = [{ ...accrualOf("Booked", [0.01]), variant: "calendar" }];
+    const said = async (plan: typeof adopt.plan, effects: typeof adopt.effects) =>
+      (await accrualParts(plan, effects, accruals, grouped.reduction)).get("Booked")?.[0]?.sentences.join(" ");
+    expect(await said(grouped.plan, grouped.effects)).toContain("At the end the interval of that day alone is ");
+    expect(await said(grouped.plan, grouped.effects)).toContain("as many as were planned. ");
+    expect(await said(several.plan, several.effects)).toContain("as many as were planned in these two groups. ");
   });
   it("is drawn for what decides, and stands in a table for what is for information", async () => {
     expect((await metricOf("Booked"))?.accrual[0]?.drawing).not.toBeNull();
@@ -156,6 +165,22 @@ describe("the effect by subgroup", () => {
     expect(part?.figure).toBeNull();
     expect(part?.numbers).toHaveLength(5);
     expect(part?.sentences[0]).toContain("fewer than two of them are large enough");
+  });
+});
+
+describe("what was asked afterwards of several variants", () => {
+  // the measure was told once for each variant, and p as "p = 0.02" under the head "p"
+  it("tells the measure once, and each variant in a sentence and a row", async () => {
+    const metrics = { plan: several.plan, reduction: several.reduction, effects: several.effects };
+    const asked = (await page({ ...several, afterwards: { subgroups: [], metrics } })).afterwards;
+    const measures = several.plan.metrics.map(({ name }) => name);
+    expect(asked?.metrics.map(({ name }) => name)).toEqual(measures);
+    const variants = several.plan.variants.filter(({ isControl }) => !isControl).map(({ name }) => name);
+    for (const { sentences } of asked?.metrics ?? []) expect(sentences).toHaveLength(variants.length);
+    expect(asked?.rows.map(({ name }) => name)).toEqual(
+      several.effects.map(({ metric, variant }) => `${metric} with "${variant}"`),
+    );
+    for (const { p } of asked?.rows ?? []) expect(p).toMatch(/^(<\u00a0?\s?0\.0001|[01](\.\d+)?|\u2013)$/);
   });
 });
 

@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { renderReport } from "../../src/report/index.ts";
+import { forestTable } from "../../src/report/sections/forest.ts";
 import { adopt, notSettled, several, undecidable } from "./cases.ts";
 import { everyCase } from "./every.ts";
 import { hostile } from "./hostile.ts";
@@ -130,6 +131,20 @@ describe("the page", () => {
     expect(page).toMatch(
       /decides .*Booked .*asked \+5%: not settled .*must not get worse .*Support contacts .*limit \+5%: not settled .*for information .*Fare per visitor/,
     );
+  });
+
+  it("names one variant of several with its measure wherever a part is of it alone", async () => {
+    const { html } = await renderReport(several);
+    expect(textOf(sectionOf(html, "decision"))).toContain("must not get worse hold for all 3 variants together.");
+    const variants = several.plan.variants.slice(0, 3);
+    const two = await forestTable(
+      several.effects.filter(({ variant }) => variant !== "map with fares"),
+      { ...several.plan, variants },
+    );
+    expect(two.reading).toContain("must not get worse hold for both variants together.");
+    const measures = textOf(sectionOf(html, "metrics"));
+    expect(measures).toContain("Booked with \u201ccalendar\u201d: what would change it, and what it amounts to");
+    expect(measures).not.toMatch(/Booked, (calendar|map)[,:]/);
   });
 
   it("gives a measure whose relative difference is not shown a row of text with its absolute interval", async () => {

@@ -47,6 +47,16 @@ describe("section 6", () => {
     expect(next[1]).toMatch(/^A size is never to be taken from the effect found here/);
   });
 
+  it("names the measures that are not in its table, and why", () => {
+    const without = notSettled.effects.map((effect) =>
+      effect.metric === "Fare per visitor" ? { ...effect, power: { ...effect.power, detectable: null } } : effect,
+    );
+    expect(section({ ...notSettled, effects: without }).reading.at(-1)).toBe(
+      "Not in the table: Fare per visitor, for want of a standard error to take a size from.",
+    );
+    expect(section(notSettled).reading.join(" ")).not.toContain("Not in the table");
+  });
+
   it("leaves out the planned size where none is stated, or as many were counted", () => {
     const columns = (plannedUnits: number | null) => section(withPlan(adopt, { plannedUnits })).table?.columns.join();
     expect(columns(100_000)).toContain("as planned");

@@ -137,7 +137,7 @@ function sentences(plan: Plan, effect: Effect, metric: Metric, accrual: Accrual)
   const confidence = planPercent(plan.decision.confidence);
   const { band, days } = accrual;
   const planned = band.isPlanned
-    ? `${count(band.planned)} ${many}, as many as were planned`
+    ? `${count(band.planned)} ${many}, as many as were planned${plan.variants.length > 2 ? " in these two groups" : ""}`
     : `${count(band.planned)} ${many}, as many as came, for the plan does not say how many were to come`;
   const [first] = days;
   return [
@@ -156,7 +156,7 @@ function atTheEnd(effect: Effect, metric: Metric, last: AccrualDay | undefined, 
   const write = (low: number | null, high: number | null) =>
     intervalInWords({ estimate: last.estimate ?? 0, low, high }, scale, words);
   const confidence = planPercent(plan.decision.confidence);
-  return `At the end the interval is ${write(last.low, last.high)}, the band ${write(last.bandLow, last.bandHigh)} (both ${confidence}).`;
+  return `At the end the interval of that day alone is ${write(last.low, last.high)}, the band ${write(last.bandLow, last.bandHigh)} (both ${confidence}).`;
 }
 
 /** From which day on the band lies on one side of zero, to the end. */

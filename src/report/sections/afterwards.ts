@@ -1,6 +1,6 @@
 import { effectSentence } from "../../decision/index.ts";
-import { list, plural, pText } from "../../words/index.ts";
-import { effectText, NONE } from "../effect-text.ts";
+import { plural, quoted } from "../../words/index.ts";
+import { effectText, pOrNone, type Signed } from "../effect-text.ts";
 import { measureText } from "../plan-words.ts";
 import type { ReportInputs } from "../types.ts";
 import { type SubgroupPart, subgroupParts } from "./subgroups.ts";
@@ -9,14 +9,19 @@ import { type SubgroupPart, subgroupParts } from "./subgroups.ts";
 export interface AfterwardsSection {
   readonly sentences: readonly string[];
   readonly metrics: readonly AskedMetric[];
+  readonly rows: readonly AskedRow[];
   readonly subgroups: readonly SubgroupPart[];
 }
 export interface AskedMetric {
   readonly name: string;
   readonly measure: string;
-  readonly sentence: string;
-  readonly difference: string;
-  readonly relative: string;
+  /** One a variant. */
+  readonly sentences: readonly string[];
+}
+export interface AskedRow {
+  readonly name: string;
+  readonly difference: Signed;
+  readonly relative: Signed | null;
   readonly p: string;
   readonly pAdjusted: string;
 }
@@ -35,7 +40,8 @@ export async function afterwardsSection({
       "None of this was planned before the test began. Who looks at enough figures finds some that chance has made, so these suggest questions for another test, and decide nothing here.",
       ...(metrics === null ? [] : [ownReading(metrics.reduction, plan)]),
     ],
-    metrics: metrics === null ? [] : metrics.effects.map((effect) => askedMetric(effect, metrics.plan)),
+    metrics: metrics === null ? [] : askedMetrics(metrics),
+    rows: metrics === null ? [] : metrics.effects.map((effect) => askedRow(effect, metrics.plan)),
     subgroups: plan.metrics.flatMap(({ name }) => parts.get(name) ?? []),
   };
 }
@@ -47,21 +53,27 @@ function ownReading({ unitLines }: Metrics["reduction"], { unitCalled: { one, ma
   return `The measures were counted in a reading of the log of their own, over ${plural(analysed, one, many)}, so that nothing that was planned depends on them.`;
 }
 
-function askedMetric(effect: Metrics["effects"][number], plan: Metrics["plan"]): AskedMetric {
-  const metric = plan.metrics.find(({ name }) => name === effect.metric);
-  if (metric === undefined) throw new Error(`no metric ${effect.metric}`);
+function askedMetrics({ plan, effects }: Metrics): AskedMetric[] {
+  return plan.metrics
+    .map((metric) => ({
+      name: metric.name,
+      measure: measureText(metric, plan),
+      sentences: effects
+        .filter((effect) => effect.metric === metric.name)
+        .map((effect) => effectSentence(effect, plan)),
+    }))
+    .filter(({ sentences }) => sentences.length > 0);
+}
+
+function askedRow(effect: Metrics["effects"][number], plan: Metrics["plan"]): AskedRow {
   const several = plan.variants.length > 2;
   const { bare, relative } = effectText(effect, plan);
   const own = (effect.adjusted?.contrast ?? effect.contrast).difference;
-  const signed = (text: { readonly estimate: string; readonly interval: string } | null) =>
-    text === null ? NONE : `${text.estimate} (${text.interval})`;
   return {
-    name: list([effect.metric, ...(several ? [effect.variant] : [])], "with"),
-    measure: measureText(metric, plan),
-    sentence: effectSentence(effect, plan),
-    difference: signed(bare),
-    relative: signed(relative),
-    p: own.p === null ? NONE : pText(own.p),
-    pAdjusted: effect.pAdjusted === null ? NONE : pText(effect.pAdjusted),
+    name: several ? `${effect.metric} with ${quoted(effect.variant)}` : effect.metric,
+    difference: bare,
+    relative,
+    p: pOrNone(own.p),
+    pAdjusted: pOrNone(effect.pAdjusted),
   };
 }

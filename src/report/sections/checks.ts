@@ -40,7 +40,7 @@ export const TITLES: Readonly<Record<string, string>> = {
   "one-unit": "No single value rules the result",
   normality: "Normal approximation",
   "without-rows": "Left out for want of a value",
-  denominator: "Denominator alike in both groups",
+  denominator: "Denominator alike in all groups",
   "plan-changed": "Plan unchanged",
 };
 

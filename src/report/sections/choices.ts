@@ -1,7 +1,7 @@
 import { type ChoiceRow, type Choices, deciding, type Effect, measure, metricOf } from "../../decision/index.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
 import type { Relative } from "../../stats/types.ts";
-import { capital, type Interval, pText, type Scale } from "../../words/index.ts";
+import { capital, type Interval, pText, quoted, type Scale } from "../../words/index.ts";
 import { type ChoiceMark, choiceAxis, choiceStrip } from "../charts/choices.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { forestScale } from "../charts/forest.ts";
@@ -78,7 +78,7 @@ async function figure(
   const write = (tick: number) => axisLabel(tick, scale);
   return {
     id,
-    title: `${effect.metric}${several ? `, ${effect.variant}` : ""}, under other reasonable choices`,
+    title: `${effect.metric}${several ? ` with ${quoted(effect.variant)}` : ""}, under other reasonable choices`,
     reading: known.length === 0 ? ONE_AT_A_TIME : readingText(mark !== null),
     plotHead: scaleText(scale, controlOf(plan).name),
     rows: tableRows,

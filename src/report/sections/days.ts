@@ -45,7 +45,7 @@ async function partOf(plan: Plan, effect: Effect, found: DaysSince, id: string):
 }
 
 const READING =
-  "Square: the difference in what happened on that day of 24 hours after enrolment, day 0 the first. Upright: its interval, of that day alone. Level line: no difference.";
+  "Square: the difference in what happened on that day of 24 hours after enrolment, day 0 the first. Upright: its interval, of that day alone. Level line: zero, where the groups do not differ.";
 
 async function drawn(
   plan: Plan,

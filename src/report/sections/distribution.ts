@@ -2,7 +2,7 @@ import { type Bin, beyond, type Shape, shape } from "../../cells/index.ts";
 import type { Effect } from "../../decision/index.ts";
 import type { Reduction, SizeTable } from "../../engine/types.ts";
 import type { Metric, Plan } from "../../plan/types.ts";
-import { count, list, number, percent, plural } from "../../words/index.ts";
+import { count, list, number, percent, plain, plural } from "../../words/index.ts";
 import { type DrawnShape, distributionStrip, sizeAxis, tails } from "../charts/distribution.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type SizeAxis, sizeScale } from "../charts/size-axis.ts";
@@ -93,9 +93,9 @@ async function figure(metric: Metric, plan: Plan, arms: readonly Arm[], id: stri
     caption,
     reading: readingOf(plan, axis, arms),
     arms: drawn,
-    axis: await draw(sizeScale(axis, number), `${id}-axis`, null),
+    axis: await draw(sizeScale(axis, plain), `${id}-axis`, null),
     tailsHead: `Of all ${many}, how many have that much or more${axis.below ? ", or are as far below 0" : ""}${unit}`,
-    tails: await draw(tails(arms, axis, number), `${id}-tails`, {
+    tails: await draw(tails(arms, axis, plain), `${id}-tails`, {
       title: `${caption}: how many have that much or more`,
       description: tailsDescribed(arms),
     }),

@@ -139,7 +139,9 @@ function readingText(plan: Plan, effects: readonly Effect[], beyond: boolean): s
       ? [`An amount in a measure\u2019s own unit, and its interval, stand at their share of the level with ${control}.`]
       : []),
     ...(variants > 1
-      ? [`Intervals of what decides or must not get worse hold for all ${variants} variants together.`]
+      ? [
+          `Intervals of what decides or must not get worse hold for ${variants === 2 ? "both" : `all ${variants}`} variants together.`,
+        ]
       : []),
     ...adjustedTexts(plan, effects),
     ...(beyond ? ["A line that reaches the edge goes on beyond it; the figures are whole."] : []),

@@ -41,9 +41,16 @@ export function powerSection(plan: Plan, reduction: Reduction, effects: readonly
   return {
     sizes: sizesText(plan, analysedUnits(reduction)),
     table: able.length === 0 ? null : powerTable(plan, reduction, able),
-    reading: able.length === 0 ? [] : reading(plan, able),
+    reading: [...(able.length === 0 ? [] : reading(plan, able)), ...notInTable(plan, able)],
     next: nextTexts(plan, effects, reduction),
   };
+}
+
+/** A quantile's interval comes from ranks, and a group without spread has none. */
+function notInTable({ metrics }: Plan, able: readonly Effect[]): string[] {
+  const names = metrics.map(({ name }) => name).filter((name) => !able.some(({ metric }) => metric === name));
+  if (names.length === 0 || able.length === 0) return [];
+  return [`Not in the table: ${list(names)}, for want of a standard error to take a size from.`];
 }
 
 function sizesText(plan: Plan, counted: number): string {

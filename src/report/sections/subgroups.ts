@@ -63,7 +63,7 @@ async function partOf(plan: Plan, effect: Effect, subgroup: Subgroup, all: numbe
   const several = plan.variants.length > 2;
   return {
     id,
-    title: `${effect.metric}${several ? `, ${effect.variant}` : ""}, by ${quoted(subgroup.column)} at enrolment`,
+    title: `${effect.metric}${several ? ` with ${quoted(effect.variant)}` : ""}, by ${quoted(subgroup.column)} at enrolment`,
     figure: effect.role === "secondary" ? null : await figureOf(plan, effect, subgroup, id),
     sentences: [
       heterogeneitySentence(subgroup, plan),

@@ -1,7 +1,7 @@
 import { type Effect, type Turn, whatWouldChange } from "../../decision/index.ts";
 import type { Reduction } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
-import { capital } from "../../words/index.ts";
+import { capital, quoted } from "../../words/index.ts";
 
 /** What would change the conclusion on one effect, as a short table. */
 export interface TurningTable {
@@ -27,6 +27,6 @@ export function turningTables(
 }
 
 function captionOf({ metric, variant, role }: Effect, several: boolean): string {
-  const of = several ? `${metric}, ${variant}` : metric;
+  const of = several ? `${metric} with ${quoted(variant)}` : metric;
   return role === "secondary" ? `${of}: what it amounts to` : `${of}: what would change it, and what it amounts to`;
 }

@@ -102,6 +102,26 @@ describe("a planted early end", () => {
     );
     expect((await of("ended: the season was over"))?.sentence).not.toContain("why it ended");
   });
+
+  // a report at the second of three planned looks said "no earlier look was planned"
+  it("is none at a look that was planned, and is one where the last came too early", async () => {
+    const at = async (look: number) =>
+      (
+        await judged(planText({ rest: `planned: {units: 4000}\nlooks: {planned: [25%, 100%], at: ${look}}` }), { rows })
+      ).find("stopped-early");
+    expect(await at(1)).toMatchObject({
+      result: "pass",
+      sentence:
+        "This is look 1 of 2 that were planned, at 25.0% of the planned size: 1,000 visitors were counted; the plan asked for 4,000.",
+    });
+    expect(await at(2)).toMatchObject({
+      result: "caution",
+      sentence:
+        "The last of the 2 planned looks came at 25.0% of the planned size: 1,000 visitors were counted; the plan asked for 4,000. The plan does not say why it ended.",
+      remedy:
+        "If it was ended for what the figures showed, they overstate the difference. State why it ended (ended), and next time wait for the planned size.",
+    });
+  });
 });
 
 describe("a log without time", () => {
