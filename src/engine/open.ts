@@ -4,7 +4,7 @@ import { type Engine, text } from "./engine.ts";
 import { enginePath, type LogFile, logFiles } from "./files.ts";
 import { records } from "./records.ts";
 import { type ColumnKind, type FileGroup, kindOf } from "./source.ts";
-import { jsonKeys, parquetColumns, parquetNames } from "./sql/read.ts";
+import { jsonKeys, parquetColumns, parquetNodes } from "./sql/read.ts";
 import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
 
 /** A log whose files are found and whose headers are read. */
@@ -77,7 +77,7 @@ async function readHeader(file: LogFile, path: string, wanted: ReadonlySet<strin
     case "ndjson":
       return asText(await jsonHeader(path, wanted, engine), 0);
     case "parquet":
-      return parquetHeader(path, engine);
+      return parquetHeader(path, wanted, engine);
   }
 }
 
@@ -108,25 +108,44 @@ async function jsonHeader(path: string, wanted: ReadonlySet<string>, engine: Eng
   return (isWhole ? sampled : await keys(0)).sort();
 }
 
-async function parquetHeader(path: string, engine: Engine): Promise<Header> {
+async function parquetHeader(path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   const described = await engine.query(parquetColumns(path));
-  const named = await engine.query(parquetNames(path));
+  const nodes = (await engine.query(parquetNodes(path))).map((row) => ({
+    name: text(row, "name"),
+    children: Number(row.num_children ?? 0n),
+    digits: Number(row.precision ?? 0n),
+  }));
+  const columns = topLevel(nodes);
+  // The engine takes a wider decimal for a double and gets its bytes wrong, without a word.
+  const wide = columns.find(({ name, digits }) => wanted.has(name) && digits > MOST_DIGITS);
+  if (wide !== undefined)
+    throw new Error(
+      `its column ${wide.name} has decimals of ${wide.digits} digits, of which the engine takes ${MOST_DIGITS}; write it with fewer, or as text`,
+    );
   return {
-    columns: topLevel(named.map((row) => ({ name: text(row, "name"), children: Number(row.num_children ?? 0n) }))),
+    columns: columns.map(({ name }) => name),
     engineNames: described.map((row) => text(row, "column_name")),
     kinds: described.map((row) => kindOf(text(row, "column_type"))),
     skip: 0,
   };
 }
 
-/** The names right under the root of a schema that is listed depth first. */
-function topLevel(nodes: readonly { readonly name: string; readonly children: number }[]): string[] {
-  const names: string[] = [];
+interface Node {
+  readonly name: string;
+  readonly children: number;
+  /** Of a decimal; else 0. */
+  readonly digits: number;
+}
+const MOST_DIGITS = 38;
+
+/** The nodes right under the root of a schema that is listed depth first. */
+function topLevel(nodes: readonly Node[]): Node[] {
+  const found: Node[] = [];
   const skip = (at: number): number => {
     let next = at + 1;
     for (let i = 0; i < (nodes[at]?.children ?? 0); i++) next = skip(next);
     return next;
   };
-  for (let at = 1; at < nodes.length; at = skip(at)) names.push(nodes[at]?.name ?? "");
-  return names;
+  for (let at = 1; at < nodes.length; at = skip(at)) found.push(...nodes.slice(at, at + 1));
+  return found;
 }
