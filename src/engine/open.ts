@@ -1,11 +1,11 @@
 import type { FoundLog, PlanSource, Problem } from "../plan/index.ts";
-import { isWhole, textOf } from "./compression.ts";
+import { isWhole, packedWith, textOf } from "./compression.ts";
 import { type Engine, text } from "./engine.ts";
 import { enginePath, type LogFile, logFiles } from "./files.ts";
 import { records } from "./records.ts";
 import { type ColumnKind, type FileGroup, kindOf } from "./source.ts";
 import { jsonKeys, parquetColumns, parquetNodes } from "./sql/read.ts";
-import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
+import { firstLine, notWhole, UnusableLog } from "./unusable.ts";
 
 /** A log whose files are found and whose headers are read. */
 export interface OpenLog {
@@ -59,9 +59,12 @@ const standsAlone = ({ engineNames }: Header) => engineNames.some((column) => co
 
 async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   try {
+    const packed = /\.(gz|zst)$/i.test(file.name) ? null : await packedWith(file.path);
+    if (packed !== null)
+      throw new Error(`it is packed with ${packed}; call it ${file.name}${packed === "gzip" ? ".gz" : ".zst"}`);
     return await readHeader(file, path, wanted, engine);
   } catch (cause) {
-    if ((await isWhole(file.path)) === false) throw endsEarly(file.name);
+    if ((await isWhole(file.path)) === false) throw await notWhole(file.name, file.path);
     throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause, path, file.name)}`, {
       cause,
     });
@@ -92,6 +95,10 @@ const asText = (columns: readonly string[], skip: number): Header => ({
 export async function delimitedHeader(path: string, delimiter: string): Promise<Header> {
   for await (const { line, text, cells } of records(textOf(path), delimiter)) {
     if (text.includes("\0")) throw new Error("it is not UTF-8, UTF-16 perhaps; save it as UTF-8");
+    if (cells === null && /"[;\t|]"/.test(text))
+      throw new Error(
+        `its cells are set apart by ${/"(.)"/.exec(text)?.[1] === ";" ? "semicolons" : "another sign"}; save it with ${delimiter === "," ? "commas" : "tabs"}`,
+      );
     if (cells === null) throw new Error("in its header a quote does not close, or more follows the closing one");
     return asText(cells, line - 1);
   }
