@@ -64,6 +64,7 @@ async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>
       throw new Error(`it is packed with ${packed}; call it ${file.name}${packed === "gzip" ? ".gz" : ".zst"}`);
     return await readHeader(file, path, wanted, engine);
   } catch (cause) {
+    if (cause instanceof UnusableLog) throw cause;
     if ((await isWhole(file.path)) === false) throw await notWhole(file.name, file.path);
     throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause, path, file.name)}`, {
       cause,

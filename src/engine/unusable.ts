@@ -28,3 +28,13 @@ export function firstLine(cause: unknown, path: string, name: string): string {
   const message = cause instanceof Error ? (cause.message.split("\n")[0] ?? "") : String(cause);
   return message.replace(/^[A-Z][A-Za-z ]* Error: /, "").replaceAll(path, name);
 }
+
+/** What an engine says when it may use too little memory: no file is to blame. @param memory what it may use, as it was given */
+export function outOfMemory(cause: unknown, memory: string | undefined): unknown {
+  if (!(cause instanceof Error) || !/^Out of Memory Error/.test(cause.message)) return cause;
+  const allowed = memory === undefined ? "this machine has for it" : `the ${memory} that it may use`;
+  return new UnusableLog(
+    `The engine needs more memory than ${allowed}. Give it more, such as --memory 2GB, or fewer --threads.`,
+    { cause },
+  );
+}

@@ -172,6 +172,27 @@ describe.each(REFUSALS)("with $what", ({ plan = PLAN, files = { "log.csv": GOOD 
   });
 });
 
+describe("an engine with too little memory", () => {
+  it.each(["10KB", "1MB", "5MB"])("of %s says so, and blames no file", async (memory) => {
+    const folder = mkdtempSync(join(tmpdir(), "closeout-memory-"));
+    try {
+      writeFileSync(join(folder, "plan.yaml"), PLAN.replace("log.csv", "log.*"));
+      writeFileSync(join(folder, "log.csv"), GOOD);
+      writeFileSync(
+        join(folder, "log.ndjson"),
+        '{"visitor": "v1", "at": "2026-03-02", "event": "search", "arm": "list"}\n',
+      );
+      const outcome = await closeout(join(folder, "plan.yaml"), { out: join(folder, "report"), memory });
+      expect(outcome).toEqual({
+        status: 3,
+        text: `The engine needs more memory than the ${memory} that it may use. Give it more, such as --memory 2GB, or fewer --threads.`,
+      });
+    } finally {
+      rmSync(folder, { recursive: true, force: true });
+    }
+  });
+});
+
 describe("a folder", () => {
   const folderOf = () => mkdtempSync(join(tmpdir(), "closeout-refused-"));
   const written = (folder: string, text: string) => {
