@@ -130,6 +130,9 @@ function commands({ terminal, load, signal, version }: Surroundings, end: (statu
     .option("--out <FILE>", "write it as a document, an HTML file, instead of to the terminal")
     .addOption(DEBUG)
     .action(async (before: string, after: string, options: RawOptions) => {
+      // Anything else would be written over by a page, a report.json too.
+      if (options.out !== undefined && !/\.html?$/i.test(options.out))
+        throw wrongArguments(`--out ${options.out}: expected the name of an .html file.`, facts(program, "compare"));
       end(await compare({ before, after, out: options.out }, terminal, await load()));
     });
 

@@ -1,4 +1,5 @@
 const REASONS: Readonly<Record<string, string>> = {
+  ENOENT: "there is no such folder, and none can be made",
   EACCES: "you do not have the right to",
   EPERM: "you do not have the right to",
   EROFS: "it can only be read",
@@ -20,6 +21,6 @@ export function unwritableText(error: unknown): string | null {
   if (reason === undefined || !WRITING.includes(syscall)) return null;
   // A file of the log is opened too, so that only the others are surely about the place of the results.
   return syscall === "open"
-    ? `${path} cannot be opened: ${reason}.`
+    ? `${path} cannot be opened: ${code === "ENOENT" ? "there is no such folder, or file" : reason}.`
     : `${path} cannot be written: ${reason}. Name another folder.`;
 }

@@ -24,6 +24,7 @@ export function unknownCommand(name: string, commands: readonly CommandFacts[]):
 export function unknownOption(option: string, command: CommandFacts | null): UsageError {
   const options = command?.options ?? ["--help", "--version"];
   const name = option.replace(/=.*/s, "");
+  if (options.includes(name) && name !== option) return new UsageError(`${name} takes no value. Write ${name} alone.`);
   const near = nearest(name, options);
   const whose = command === null ? "closeout" : `closeout ${command.name}`;
   return new UsageError(`${whose} has no option ${name}.${didYouMean(near)}\nIts options are ${list(options)}.`);

@@ -1,5 +1,5 @@
 import { createReadStream } from "node:fs";
-import { stat } from "node:fs/promises";
+import { open, stat } from "node:fs/promises";
 import { pipeline } from "node:stream";
 import { createGunzip } from "node:zlib";
 import { Decompress } from "fzstd";
@@ -40,6 +40,18 @@ async function* zstandard(pieces: AsyncIterable<Uint8Array>): AsyncGenerator<Uin
   // It keeps frames of a few bytes back until it knows that nothing follows.
   stream.push(new Uint8Array(0), true);
   yield* ready;
+}
+
+/** How a file is packed by its first bytes, whatever it is called; null for one that is not, or is empty. */
+export async function packedWith(file: string): Promise<"gzip" | "Zstandard" | null> {
+  const handle = await open(file);
+  try {
+    const { buffer, bytesRead } = await handle.read(Buffer.alloc(4), 0, 4, 0);
+    if (bytesRead >= 2 && buffer.readUInt16LE(0) === 0x8b1f) return "gzip";
+    return bytesRead === 4 && buffer.readUInt32LE(0) === 0xfd2fb528 ? "Zstandard" : null;
+  } finally {
+    await handle.close();
+  }
 }
 
 /**

@@ -1,6 +1,7 @@
 import { type DuckDBConnection, DuckDBDecimalValue, DuckDBInstance, type DuckDBValue } from "@duckdb/node-api";
 import type { Engine, Row, Value } from "./engine.ts";
 import type { Statement } from "./sql/sql.ts";
+import { outOfMemory } from "./unusable.ts";
 
 export interface DuckdbOptions {
   readonly threads?: number | undefined;
@@ -12,6 +13,14 @@ export interface DuckdbOptions {
 
 /** An engine in this process, without a database file. */
 export async function openDuckdb(options: DuckdbOptions): Promise<Engine> {
+  const within = <T>(work: Promise<T>): Promise<T> =>
+    work.catch((cause: unknown) => {
+      throw outOfMemory(cause, options.memory);
+    });
+  return within(opened(options, within));
+}
+
+async function opened(options: DuckdbOptions, within: <T>(work: Promise<T>) => Promise<T>): Promise<Engine> {
   const instance = await DuckDBInstance.create(":memory:", {
     temp_directory: options.workFolder,
     // Nothing that a run needs may come from outside.
@@ -28,9 +37,9 @@ export async function openDuckdb(options: DuckdbOptions): Promise<Engine> {
     name: "duckdb",
     version,
     run: async (statement) => {
-      await connection.run(statement.text);
+      await within(connection.run(statement.text));
     },
-    query: (statement) => query(connection, statement),
+    query: (statement) => within(query(connection, statement)),
     interrupt: () => connection.interrupt(),
     close: () => {
       connection.closeSync();

@@ -41,7 +41,7 @@ export async function logFiles(
     for (const [j, pattern] of entry.files.entries()) {
       const item = entry.files.length === 1 ? null : j;
       const found = await matches(pattern, folder);
-      if (found.length === 0) problems.push(noSuchFile(source, item, pattern, await neighbours(pattern, folder)));
+      if (found.length === 0) problems.push(await noFile(source, item, pattern, folder));
       for (const name of found) {
         if (formatOf(name) === null) problems.push(unknownEnding(source, item, name));
         else names.add(name);
@@ -52,6 +52,14 @@ export async function logFiles(
     }
   }
   return { files, problems };
+}
+
+async function noFile(source: number, item: number | null, pattern: string, folder: string): Promise<Problem> {
+  const isFolder = await stat(path.resolve(folder, pattern)).then(
+    (found) => found.isDirectory(),
+    () => false,
+  );
+  return noSuchFile(source, item, pattern, await neighbours(pattern, folder), isFolder);
 }
 
 /** What else lies where a path leads, for a nearest name. */

@@ -10,7 +10,7 @@ import type { Layout } from "./layout.ts";
 import { quoted, records } from "./records.ts";
 import { listTable } from "./sql/index.ts";
 import type { InputFile } from "./types.ts";
-import { endsEarly, UnusableLog } from "./unusable.ts";
+import { notWhole, UnusableLog } from "./unusable.ts";
 
 /**
  * Lists of unit ids that filters name: one id a line, or a column headed like the unit's. They are cut in Node, whatever
@@ -29,7 +29,7 @@ export async function readLists(
   for (const filter of layout.unitFilters) {
     if (filter.kind !== "listed") continue;
     const file = path.resolve(folder, filter.listedIn);
-    if ((await isWhole(file)) === false) throw endsEarly(filter.listedIn);
+    if ((await isWhole(file)) === false) throw await notWhole(filter.listedIn, file);
     const copy = path.join(workFolder, `list-${filter.list}.csv`);
     let rows = 0;
     await pipeline(

@@ -1,11 +1,11 @@
 import type { FoundLog, PlanSource, Problem } from "../plan/index.ts";
-import { isWhole, textOf } from "./compression.ts";
+import { isWhole, packedWith, textOf } from "./compression.ts";
 import { type Engine, text } from "./engine.ts";
 import { enginePath, type LogFile, logFiles } from "./files.ts";
 import { records } from "./records.ts";
 import { type ColumnKind, type FileGroup, kindOf } from "./source.ts";
-import { jsonKeys, parquetColumns, parquetNames } from "./sql/read.ts";
-import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
+import { jsonKeys, parquetColumns, parquetNodes } from "./sql/read.ts";
+import { firstLine, notWhole, UnusableLog } from "./unusable.ts";
 
 /** A log whose files are found and whose headers are read. */
 export interface OpenLog {
@@ -59,9 +59,13 @@ const standsAlone = ({ engineNames }: Header) => engineNames.some((column) => co
 
 async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   try {
+    const packed = /\.(gz|zst)$/i.test(file.name) ? null : await packedWith(file.path);
+    if (packed !== null)
+      throw new Error(`it is packed with ${packed}; call it ${file.name}${packed === "gzip" ? ".gz" : ".zst"}`);
     return await readHeader(file, path, wanted, engine);
   } catch (cause) {
-    if ((await isWhole(file.path)) === false) throw endsEarly(file.name);
+    if (cause instanceof UnusableLog) throw cause;
+    if ((await isWhole(file.path)) === false) throw await notWhole(file.name, file.path);
     throw new UnusableLog(`${file.name} cannot be read as ${file.format}: ${firstLine(cause, path, file.name)}`, {
       cause,
     });
@@ -77,7 +81,7 @@ async function readHeader(file: LogFile, path: string, wanted: ReadonlySet<strin
     case "ndjson":
       return asText(await jsonHeader(path, wanted, engine), 0);
     case "parquet":
-      return parquetHeader(path, engine);
+      return parquetHeader(path, wanted, engine);
   }
 }
 
@@ -92,6 +96,10 @@ const asText = (columns: readonly string[], skip: number): Header => ({
 export async function delimitedHeader(path: string, delimiter: string): Promise<Header> {
   for await (const { line, text, cells } of records(textOf(path), delimiter)) {
     if (text.includes("\0")) throw new Error("it is not UTF-8, UTF-16 perhaps; save it as UTF-8");
+    if (cells === null && /"[;\t|]"/.test(text))
+      throw new Error(
+        `its cells are set apart by ${/"(.)"/.exec(text)?.[1] === ";" ? "semicolons" : "another sign"}; save it with ${delimiter === "," ? "commas" : "tabs"}`,
+      );
     if (cells === null) throw new Error("in its header a quote does not close, or more follows the closing one");
     return asText(cells, line - 1);
   }
@@ -108,25 +116,44 @@ async function jsonHeader(path: string, wanted: ReadonlySet<string>, engine: Eng
   return (isWhole ? sampled : await keys(0)).sort();
 }
 
-async function parquetHeader(path: string, engine: Engine): Promise<Header> {
+async function parquetHeader(path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
   const described = await engine.query(parquetColumns(path));
-  const named = await engine.query(parquetNames(path));
+  const nodes = (await engine.query(parquetNodes(path))).map((row) => ({
+    name: text(row, "name"),
+    children: Number(row.num_children ?? 0n),
+    digits: Number(row.precision ?? 0n),
+  }));
+  const columns = topLevel(nodes);
+  // The engine takes a wider decimal for a double and gets its bytes wrong, without a word.
+  const wide = columns.find(({ name, digits }) => wanted.has(name) && digits > MOST_DIGITS);
+  if (wide !== undefined)
+    throw new Error(
+      `its column ${wide.name} has decimals of ${wide.digits} digits, of which the engine takes ${MOST_DIGITS}; write it with fewer, or as text`,
+    );
   return {
-    columns: topLevel(named.map((row) => ({ name: text(row, "name"), children: Number(row.num_children ?? 0n) }))),
+    columns: columns.map(({ name }) => name),
     engineNames: described.map((row) => text(row, "column_name")),
     kinds: described.map((row) => kindOf(text(row, "column_type"))),
     skip: 0,
   };
 }
 
-/** The names right under the root of a schema that is listed depth first. */
-function topLevel(nodes: readonly { readonly name: string; readonly children: number }[]): string[] {
-  const names: string[] = [];
+interface Node {
+  readonly name: string;
+  readonly children: number;
+  /** Of a decimal; else 0. */
+  readonly digits: number;
+}
+const MOST_DIGITS = 38;
+
+/** The nodes right under the root of a schema that is listed depth first. */
+function topLevel(nodes: readonly Node[]): Node[] {
+  const found: Node[] = [];
   const skip = (at: number): number => {
     let next = at + 1;
     for (let i = 0; i < (nodes[at]?.children ?? 0); i++) next = skip(next);
     return next;
   };
-  for (let at = 1; at < nodes.length; at = skip(at)) names.push(nodes[at]?.name ?? "");
-  return names;
+  for (let at = 1; at < nodes.length; at = skip(at)) found.push(...nodes.slice(at, at + 1));
+  return found;
 }

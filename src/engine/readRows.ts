@@ -1,16 +1,27 @@
 import type { Plan } from "../plan/index.ts";
+import { list, plural } from "../words/index.ts";
 import { contentOf, isWhole } from "./compression.ts";
-import { count, type Engine } from "./engine.ts";
+import { count, type Engine, type Row } from "./engine.ts";
 import { fingerprint, type LogFile } from "./files.ts";
 import { FATE, type Layout } from "./layout.ts";
-import { rowsPerFile } from "./ledger.ts";
+import { reasonText } from "./ledger.ts";
 import type { OpenLog } from "./open.ts";
 import { delimiterOf } from "./records.ts";
 import { rewritten } from "./rewrite.ts";
 import type { FileGroup } from "./source.ts";
-import { brokenQuotes, type Dialect, forgetRows, linesWithSurplus, rows, sql, unreadableRows } from "./sql/index.ts";
+import {
+  brokenQuotes,
+  type Dialect,
+  forgetRows,
+  linesWithSurplus,
+  REASON,
+  rows,
+  rowsByReason,
+  sql,
+  unreadableRows,
+} from "./sql/index.ts";
 import { surplusFinder } from "./surplus.ts";
-import { endsEarly, firstLine, UnusableLog } from "./unusable.ts";
+import { firstLine, notWhole, UnusableLog } from "./unusable.ts";
 import type { Step } from "./zone.ts";
 
 /** What is known of a file from its bytes. */
@@ -40,7 +51,7 @@ async function fingerprintOf(log: OpenLog, { name, path, format }: LogFile, inde
       ? surplusFinder(delimiterOf(format), group.columns.length)
       : null;
   const whole = await isWhole(path, finder?.add);
-  if (whole === false) throw endsEarly(name);
+  if (whole === false) throw await notWhole(name, path);
   const print = await fingerprint(path, whole === null ? finder?.add : undefined);
   const isSeen = whole === null || /\.gz$/i.test(path);
   return { ...print, surplus: finder === null ? false : isSeen ? finder.end() : null };
@@ -138,19 +149,37 @@ async function dropRejects(engine: Engine): Promise<void> {
 }
 
 /** A log of which no row can be used is refused. */
-export async function refuseWithoutRows(log: OpenLog, engine: Engine): Promise<void> {
+export async function refuseWithoutRows(log: OpenLog, layout: Layout, engine: Engine): Promise<void> {
   const isReadable =
     log.groups.length > 0 &&
     (await engine.query(sql`SELECT count(*) AS rows FROM rows WHERE fate <> ${FATE.rejected}`)).some(
       (row) => count(row, "rows") > 0,
     );
   if (!isReadable) {
-    const rejected =
-      log.groups.length === 0 ? 0 : (await rowsPerFile(log.files.length, engine)).reduce((a, b) => a + b, 0);
-    throw new UnusableLog(
-      rejected === 0
-        ? "The log has no rows: its files are empty or hold only a header. Look at the paths in the plan's log."
-        : `None of the log's ${rejected} rows could be read. Look at the columns and the time format that the plan names.`,
-    );
+    const rejected = log.groups.length === 0 ? [] : await engine.query(rowsByReason());
+    throw new UnusableLog(rejected.length === 0 ? NO_ROWS : noneReadable(rejected, layout));
   }
+}
+
+const NO_ROWS = "The log has no rows: its files are empty or hold only a header. Look at the paths in the plan's log.";
+
+/** All reasons, the commonest first, and how what it misses is written. */
+function noneReadable(rejected: readonly Row[], layout: Layout): string {
+  const reasons = rejected
+    .map((row) => ({ reason: count(row, "reason"), rows: count(row, "rows") }))
+    .sort((a, b) => b.rows - a.rows || a.reason - b.reason);
+  const all = reasons.reduce((sum, { rows }) => sum + rows, 0);
+  const told = reasons.map(({ reason, rows }) => `${reasonText(reason, layout)} (${plural(rows, "row", "rows")})`);
+  return `None of the log's ${all} rows could be read: ${list(told)}. ${remedyFor(reasons[0]?.reason ?? 0)}`;
+}
+
+function remedyFor(reason: number): string {
+  if (reason === REASON.notObject)
+    return "Each line of such a file is one JSON object: no list around them, no object over several lines.";
+  if (reason === REASON.noTime)
+    return "A time is written as 2026-03-02T08:15:30, or as a whole number of seconds, milliseconds or microseconds since 1970. Look at the column that the plan names.";
+  if (reason >= REASON.outOfRange) return "Numbers of up to 18 digits before the point are read.";
+  if (reason >= REASON.notNumber)
+    return "A number is written as 1234.5, without a unit or separators. Look at the column that the plan names.";
+  return "Look at the columns that the plan names.";
 }

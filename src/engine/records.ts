@@ -7,7 +7,10 @@ export interface RawRecord {
   /** Physical line on which the record starts, from 1. */
   readonly line: number;
   readonly text: string;
-  /** Null when the record cannot be cut into cells: a quoted cell that goes on after its closing quote, or never ends. */
+  /**
+   * Null when the record cannot be cut into cells: a quoted cell that goes on after its closing quote, or never ends. Such
+   * a quote may have swallowed rows, so each line of it stands as a record of its own.
+   */
   readonly cells: readonly string[] | null;
 }
 
@@ -41,7 +44,7 @@ export async function* records(chunks: AsyncIterable<string>, delimiter: string)
       // A record may go on in the next piece, and so may a line end that is cut between its two characters.
       if (end === null || (rest[end.next - 1] === "\r" && end.next === rest.length)) break;
       const text = rest.slice(from, end.at);
-      if (text !== "") yield { line, text, cells: cells(text, delimiter) };
+      if (text !== "") yield* cut(text, line, delimiter);
       line += lines(rest.slice(from, end.next));
       from = end.next;
     }
@@ -50,7 +53,14 @@ export async function* records(chunks: AsyncIterable<string>, delimiter: string)
       throw new EndlessRecord(`the record on line ${line} does not end; look for a quote that does not close`);
   }
   const last = rest.endsWith("\r") ? rest.slice(0, -1) : rest;
-  if (last !== "") yield { line, text: last, cells: cells(last, delimiter) };
+  if (last !== "") yield* cut(last, line, delimiter);
+}
+
+function* cut(text: string, line: number, delimiter: string): Generator<RawRecord> {
+  const found = cells(text, delimiter);
+  if (found !== null) return yield { line, text, cells: found };
+  for (const [i, own] of text.split(/\r\n|\r|\n/).entries())
+    if (own !== "") yield { line: line + i, text: own, cells: null };
 }
 
 /**

@@ -131,7 +131,7 @@ export async function enrolUnits(
   const zone = offsetsByLocalTime(plan.timezone);
   const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, prints, options.signal);
   // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
-  await refuseWithoutRows(log, engine).catch(async (error: unknown) => {
+  await refuseWithoutRows(log, layout, engine).catch(async (error: unknown) => {
     await fingerprints;
     throw error;
   });

@@ -29,9 +29,10 @@ export function logProblems(
   { mentions, log }: Pick<PlanSource, "mentions" | "log">,
   found: FoundLog,
 ): readonly Problem[] {
-  const entries = found.columnsBySource.map(({ files, isPartial }) => ({
-    files: files.filter(({ columns }) => columns.length > 0),
-    isPartial: isPartial === true || files.length === 0,
+  const apart = found.columnsBySource.map(({ files }, entry) => otherwiseApart(entry, files, mentions));
+  const entries = found.columnsBySource.map(({ files, isPartial }, entry) => ({
+    files: apart[entry] === null ? files.filter(({ columns }) => columns.length > 0) : [],
+    isPartial: isPartial === true || files.length === 0 || apart[entry] !== null,
   }));
   const files = entries.flatMap((entry) => entry.files);
   const isWhole = entries.length === log.length && entries.every(({ isPartial }) => !isPartial) && files.length > 0;
@@ -44,7 +45,34 @@ export function logProblems(
     ? firstOfEachName(mentions.filter(({ role, name }) => role === null && !inLog.has(name) && !told.has(name)))
     : [];
   const twice = firstOfEachName(mentions).flatMap((mention) => standsTwice(mention, files));
-  return [...absent.map(({ problem }) => problem), ...others.map((mention) => missingInLog(mention, inLog)), ...twice];
+  return [
+    ...apart.filter((problem) => problem !== null),
+    ...absent.map(({ problem }) => problem),
+    ...others.map((mention) => missingInLog(mention, inLog)),
+    ...twice,
+  ];
+}
+
+const SIGNS: readonly (readonly [sign: string, called: string])[] = [
+  [";", "semicolons"],
+  ["\t", "tabs"],
+  ["|", "upright strokes"],
+  [",", "commas"],
+];
+
+/** The first file of the entry whose header is one column, but holds ours if it is cut at another sign. */
+function otherwiseApart(entry: number, files: readonly FoundFile[], mentions: readonly Mention[]): Problem | null {
+  const ours = mentions.filter(({ role, path }) => role !== null && path[1] === entry).map(({ name }) => name);
+  for (const { name, columns } of files) {
+    const [only = "", ...others] = columns;
+    const sign = SIGNS.find(([by]) => only.includes(by) && ours.every((our) => only.split(by).includes(our)));
+    if (others.length > 0 || sign === undefined || ours.includes(only)) continue;
+    const [by, called] = sign;
+    const remedy = by === "\t" ? "Call it .tsv." : by === "," ? "Call it .csv." : "Save it with commas.";
+    const message = `The cells of ${name} are set apart by ${called}, so all of its header is one column. ${remedy}`;
+    return { path: ["log", entry, "files"], at: "value", message };
+  }
+  return null;
 }
 
 /** A path or pattern of `log` that leads to no file. @param item its place in the list of files; null if there is no list */
@@ -53,10 +81,19 @@ export function noSuchFile(
   item: number | null,
   pattern: string,
   neighbours: Iterable<string> = [],
+  isFolder = false,
 ): Problem {
+  const path = ["log", entry, "files", ...(item === null ? [] : [item])];
+  if (isFolder) {
+    const inside = `${pattern.replace(/\/+$/, "")}/*.csv`;
+    return { path, at: "value", message: `${pattern} is a folder. Name the files in it, such as ${inside}.` };
+  }
+  if (/^[a-z][a-z0-9+.-]+:\/\//i.test(pattern)) {
+    return { path, at: "value", message: `${pattern} is an address. Fetch the file, and name where it lies.` };
+  }
   const what = /[*?[{]/.test(pattern) ? `No file matches ${pattern}.` : `There is no file ${pattern}.`;
   return {
-    path: ["log", entry, "files", ...(item === null ? [] : [item])],
+    path,
     at: "value",
     message: `${what} Paths are read from the plan's folder.`,
     nearest: nearest(pattern, neighbours),
@@ -87,7 +124,7 @@ function missingInEntry(mention: Mention, files: readonly FoundFile[]): readonly
     path,
     at,
     message,
-    nearest: nearest(name, columns),
+    nearest: shownNearest(name, columns),
     context: `${first.name} has: ${listed(first.columns)}.`,
   };
   return [{ name, problem }];
@@ -95,7 +132,7 @@ function missingInEntry(mention: Mention, files: readonly FoundFile[]): readonly
 
 function missingInLog({ name, path, at }: Mention, inLog: ReadonlySet<string>): Problem {
   const message = "No file of the log has this column.";
-  return { path, at, message, nearest: nearest(name, inLog), context: `The log has: ${listed([...inLog])}.` };
+  return { path, at, message, nearest: shownNearest(name, inLog), context: `The log has: ${listed([...inLog])}.` };
 }
 
 function standsTwice({ name, path, at }: Mention, files: readonly FoundFile[]): readonly Problem[] {
@@ -121,7 +158,15 @@ function named(files: readonly FoundFile[]): string {
 }
 
 function listed(columns: readonly string[]): string {
-  const names = [...new Set(columns)].sort();
+  const names = [...new Set(columns)].sort().map(shown);
   const rest = names.length - MOST_LISTED;
   return rest <= 1 ? names.join(", ") : `${names.slice(0, MOST_LISTED).join(", ")} and ${rest} more`;
+}
+
+/** A blank at the end of a name would not be seen. */
+const shown = (column: string): string => (column === column.trim() && column !== "" ? column : `"${column}"`);
+
+function shownNearest(name: string, columns: Iterable<string>): string | undefined {
+  const found = nearest(name, columns);
+  return found === undefined ? undefined : shown(found);
 }

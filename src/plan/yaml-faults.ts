@@ -6,10 +6,44 @@ import type { Problem } from "./types.ts";
 /** One problem a line, and none after the point where the parser lost the thread: all else would be its consequence. */
 export function yamlProblems(all: readonly YAMLError[], text: string): readonly Problem[] {
   const lost = all.findIndex(({ message }) => message.includes("in YAML stream"));
-  const faults = lost === -1 ? all : all.slice(0, lost + 1);
+  const upTo = lost === -1 ? all : all.slice(0, lost + 1);
+  const tab = upTo.findIndex(({ code }) => code === "TAB_AS_INDENT");
+  const faults = upTo.filter(({ code }, i) => tab === -1 || i <= tab || !OF_INDENTS.includes(code));
   const lineOf = (offset: number) => text.slice(0, offset).split("\n").length;
-  const lines = faults.map((fault) => lineOf(fault.pos[0]));
-  return faults.filter((_, i) => lines.indexOf(lines[i] ?? 0) === i).map((fault) => yamlProblem(fault, text));
+  const told = new Set<number>();
+  return faults.flatMap((fault) => {
+    const line = lineOf(fault.pos[0]);
+    const deeper = furtherRight(fault, all, text);
+    const isTold = told.has(line);
+    for (const one of deeper === null ? [line] : [line, lineOf(deeper)]) told.add(one);
+    if (isTold) return [];
+    return [deeper === null ? yamlProblem(fault, text) : { ...FURTHER_RIGHT, span: [deeper, deeper + 1] as const }];
+  });
+}
+const OF_INDENTS: readonly string[] = [
+  "BLOCK_AS_IMPLICIT_KEY",
+  "MULTILINE_IMPLICIT_KEY",
+  "BAD_INDENT",
+  "MISSING_CHAR",
+] satisfies readonly YAMLError["code"][];
+
+const FURTHER_RIGHT = {
+  path: [],
+  at: "key",
+  message: "This line is indented further than the one it belongs to. Let keys of one mapping begin in one column.",
+} as const;
+
+/**
+ * Where a key stands deeper than the value above it, which the parser takes for one text over both lines and a key in it:
+ * the place of that key; null for other faults.
+ */
+function furtherRight(fault: YAMLError, all: readonly YAMLError[], text: string): number | null {
+  const [start] = fault.pos;
+  const over = all.find(({ code, pos }) => code === "MULTILINE_IMPLICIT_KEY" && pos[0] === start);
+  if (fault.code !== "BLOCK_AS_IMPLICIT_KEY" || over === undefined) return null;
+  const lineEnd = text.indexOf("\n", start);
+  if (lineEnd === -1 || lineEnd >= over.pos[1]) return null;
+  return lineEnd + text.slice(lineEnd).search(/\S/);
 }
 
 /** Where a decoder has put its mark for bytes that are no UTF-8; no name with it could match the log's. */
@@ -56,6 +90,11 @@ const MOST_NODES = 20_000; // a plan has hundreds
 
 function yamlProblem(fault: YAMLError, text: string): Problem {
   const words = WORDS.find(([code, pattern]) => code === fault.code && pattern.test(fault.message));
+  const key = fault.code === "MULTILINE_IMPLICIT_KEY" ? /^[\w-]+:\S*/.exec(text.slice(fault.pos[0])) : null;
+  if (key !== null) {
+    const span = [fault.pos[0], fault.pos[0] + key[0].length] as const;
+    return { path: [], at: "key", message: "A space belongs behind the colon of a key.", span };
+  }
   const message = words?.[2] ?? `This is not YAML: ${fault.message}.`;
   return { path: [], at: "key", message, span: spanOf(fault, text) };
 }

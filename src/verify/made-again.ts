@@ -9,7 +9,7 @@ import { loadPlan, type Plan, type PlanSource, placeProblems } from "../plan/ind
 import { keptReport, type PreviousReport, previousReport, type ReportFiles } from "../report/index.ts";
 import { rerunOf } from "../steps.ts";
 import { plural } from "../words/index.ts";
-import { baseOf } from "./base.ts";
+import { baseOf, notTheBase } from "./base.ts";
 import { cellsWords } from "./cells-words.ts";
 import type { Given } from "./given.ts";
 
@@ -60,6 +60,8 @@ async function fromLog(
   previous: PreviousReport | null,
   options: VerifyOptions,
 ): Promise<Made | Verified> {
+  const wrong = options.base === undefined ? null : await notTheBase(source, options.base);
+  if (wrong !== null) return { status: 2, text: wrong };
   const base = options.base ?? (await baseOf(source, file));
   if (base === null) {
     return {

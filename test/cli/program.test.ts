@@ -130,6 +130,19 @@ describe("closeout report", () => {
     expect(stderr).toMatch(/program\.test\.ts.out cannot be written: a part of this path is a file, not a folder\./);
   });
 
+  it.each([
+    [
+      "mkdtemp",
+      "/no/such/.closeout-vm",
+      "/no/such/.closeout-vm cannot be written: there is no such folder, and none can be made. Name another folder.",
+    ],
+    ["open", "no/such.html", "no/such.html cannot be opened: there is no such folder, or file."],
+  ])("and says so too of a folder that %s does not find", async (syscall, path, told) => {
+    const refused = Object.assign(new Error("ENOENT: no such file or directory"), { code: "ENOENT", syscall, path });
+    const { status, stderr } = await command(["report", "a.yaml"], refused);
+    expect([status, stderr]).toEqual([2, told]);
+  });
+
   it("takes a reading that was stopped for stopped, not for a log that cannot be used", async () => {
     const stopped = command(
       ["report", "a.yaml"],
@@ -158,6 +171,8 @@ describe("wrong arguments", () => {
     [["report", "a.yaml", "b.yaml"], "closeout report was given too many names."],
     [["report", "a.yaml", "--thread", "2"], "closeout report has no option --thread. Did you mean --threads?"],
     [["report", "a.yaml", "--thread=2"], "closeout report has no option --thread. Did you mean --threads?"],
+    [["report", "a.yaml", "--figures=yes"], "--figures takes no value. Write --figures alone."],
+    [["compare", "a.json", "b.json", "--out", "b.json"], "--out b.json: expected the name of an .html file."],
     [["demo", "report", "--ouch"], "closeout demo has no option --ouch."],
     [["--verbose"], "closeout has no option --verbose."],
     [["report", "a.yaml", "--out"], "--out needs a value: --out DIR"],

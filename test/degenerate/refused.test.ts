@@ -96,14 +96,38 @@ const REFUSALS: readonly Refusal[] = [
     what: "all rows rejected",
     files: { "log.csv": `${HEADER}\nv1,yesterday,search,list,\nv2,,search,calendar,\nv3\n` },
     status: 3,
-    says: [/None of the log's 3 rows could be read/],
+    says: [
+      /None of the log's 3 rows could be read: no readable time \(2 rows\) and cannot be read: the cells do not fit the header \(1 row\)\./,
+      /A time is written as 2026-03-02T08:15:30, or as a whole number/,
+    ],
   },
   {
     what: "lines of JSON of which none is an object",
     plan: PLAN.replace("log.csv", "log.ndjson"),
     files: { "log.ndjson": "nothing\n17\n" },
     status: 3,
-    says: [/None of the log's 2 rows could be read/],
+    says: [/None of the log's 2 rows could be read: cannot be read: not a JSON object \(2 rows\)\. Each line/],
+  },
+  {
+    what: "a file that is called packed and is not",
+    plan: PLAN.replace("log.csv", "log.csv.gz"),
+    files: { "log.csv.gz": GOOD },
+    status: 3,
+    says: [
+      /log\.csv\.gz does not begin as packed files do: it is damaged, or not packed at all\. .*call it log\.csv\./,
+    ],
+  },
+  {
+    what: "a file that is packed and not called so",
+    files: { "log.csv": packed },
+    status: 3,
+    says: [/log\.csv cannot be read as csv: it is packed with gzip; call it log\.csv\.gz/],
+  },
+  {
+    what: "a header in quotes, set apart by semicolons",
+    files: { "log.csv": '"visitor";"at";"event";"arm";"fare"\n"v1";"2026-03-02";"search";"list";""\n' },
+    status: 3,
+    says: [/log\.csv cannot be read as csv: its cells are set apart by semicolons; save it with commas/],
   },
   {
     what: "a packed file that ends early",
@@ -145,6 +169,27 @@ describe.each(REFUSALS)("with $what", ({ plan = PLAN, files = { "log.csv": GOOD 
     const others = text.replaceAll(join(folder, "plan.yaml"), "plan.yaml");
     expect(others).not.toMatch(/\/tmp\/|node_modules|\n\s+at |Error:/);
     expect(others).not.toMatch(/undefined|NaN|\[object/);
+  });
+});
+
+describe("an engine with too little memory", () => {
+  it.each(["10KB", "1MB", "5MB"])("of %s says so, and blames no file", async (memory) => {
+    const folder = mkdtempSync(join(tmpdir(), "closeout-memory-"));
+    try {
+      writeFileSync(join(folder, "plan.yaml"), PLAN.replace("log.csv", "log.*"));
+      writeFileSync(join(folder, "log.csv"), GOOD);
+      writeFileSync(
+        join(folder, "log.ndjson"),
+        '{"visitor": "v1", "at": "2026-03-02", "event": "search", "arm": "list"}\n',
+      );
+      const outcome = await closeout(join(folder, "plan.yaml"), { out: join(folder, "report"), memory });
+      expect(outcome).toEqual({
+        status: 3,
+        text: `The engine needs more memory than the ${memory} that it may use. Give it more, such as --memory 2GB, or fewer --threads.`,
+      });
+    } finally {
+      rmSync(folder, { recursive: true, force: true });
+    }
   });
 });
 

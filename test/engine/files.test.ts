@@ -116,6 +116,11 @@ describe("what leads to no file", () => {
       ["log", 0, "files"],
       ["log", 1, "files"],
     ]);
+    expect(problems[0]?.message).toBe("data is a folder. Name the files in it, such as data/*.csv.");
+  });
+  it("is an address too, since nothing is fetched", async () => {
+    const { problems } = await logFiles([{ files: ["s3://bucket/a.csv"] }], folder);
+    expect(problems[0]?.message).toBe("s3://bucket/a.csv is an address. Fetch the file, and name where it lies.");
   });
   it("and an ending that is none of ours is one, for each such file", async () => {
     const { files, problems } = await logFiles([{ files: ["*.txt", "a.csv"] }], folder);

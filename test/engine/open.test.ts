@@ -120,14 +120,26 @@ describe("a packed file", () => {
       ["log.csv.gz", gz.subarray(0, 30)],
       ["log.csv.gz", flipped(gz, gz.length >> 1)],
       ["log.csv.gz", flipped(gz, gz.length - 6)],
-      ["log.csv.gz", Buffer.from("no gzip at all")],
       ["log.csv.zst", zst.subarray(0, -9)],
       ["log.csv.zst", zst.subarray(0, zst.length >> 1)],
       ["log.csv.zst", zst.subarray(0, 30)],
-      ["log.csv.zst", Buffer.from("no Zstandard at all")],
     ] as const) {
       const run = reduced(fares({ files: name }), { [name]: bytes });
       await expect(run, `${name}, ${bytes.length} bytes`).rejects.toThrow(/ends early or is damaged/);
+    }
+  });
+  it("that is none, or packed in another way, is told so, with the name that it should have", async () => {
+    const zst = await zstandardOf(HEADER);
+    const none = /is damaged, or not packed at all\. Fetch it again, or call it log\.csv\.$/;
+    for (const [name, bytes, told] of [
+      ["log.csv.gz", Buffer.from("no gzip at all"), none],
+      ["log.csv.zst", Buffer.from("no Zstandard at all"), none],
+      ["log.csv.gz", zst, /is packed with Zstandard, whatever its name says\. Call it log\.csv\.zst\.$/],
+      ["log.csv.zst", gzipSync(HEADER), /is packed with gzip, whatever its name says\. Call it log\.csv\.gz\.$/],
+      ["log.csv", gzipSync(HEADER), /it is packed with gzip; call it log\.csv\.gz$/],
+      ["log.ndjson", zst, /it is packed with Zstandard; call it log\.ndjson\.zst$/],
+    ] as const) {
+      await expect(reduced(fares({ files: name }), { [name]: bytes }), name).rejects.toThrow(told);
     }
   });
   it("that is damaged inside a whole frame does not pass for a good one", async () => {

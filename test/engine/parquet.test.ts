@@ -5,6 +5,17 @@ const HEADER = "visitor,at,event,arm,fare";
 const ROWS = "v1,2026-03-02,search,list,1.5\nv2,2026-03-02,search,calendar,2\n";
 const ARMS = [["1: 1.5", "1: 2"]];
 
+/** Two rows, v1 and v2, with fares 1.5 and 2 as decimals of 40 digits, as another program (pyarrow 26.0) writes them. */
+const WIDE_DECIMAL =
+  "UEFSMRUAFSQVJCwVBBUAFQYVBhwAAAACAAAABAECAAAAdjECAAAAdjIVABUsFSwsFQQVABUGFQYcAAAAAgAAAAQBAMCaRP9LBgAAwJpE/0sGAB" +
+  "UAFSAVICwVBBUAFQYVBhwAAAACAAAABAEBAAAAcwEAAABzFQAVNBU0LBUEFQAVBhUGHAAAAAIAAAAEAQQAAABsaXN0CAAAAGNhbGVuZGFyFQAV" +
+  "UBVQLBUEFQAVBhUGHAAAAAIAAAAEAQAAAAAAAAAAAAAAAAAAAACWAAAAAAAAAAAAAAAAAAAAAMgVBBlsNQAYBnNjaGVtYRUKABUMJQIYB3Zpc2" +
+  "l0b3IlAEwcAAAAFQQlAhgCYXQlFEyMEhwsAAAAAAAVDCUCGAVldmVudCUATBwAAAAVDCUCGANhcm0lAEwcAAAAFQ4VIhUCGARmYXJlJQoVBBVQ" +
+  "LFwVBBVQAAAAFgQZHBlcJgAcFQwZJQYAGRgHdmlzaXRvchUAFgQWShZKJghJHBUAFQAVAgA8FggZBhkmAAQAAAAmABwVBBklBgAZGAJhdBUAFg" +
+  "QWUhZSJlJJHBUAFQAVAgA8KQYZJgAEAAAAJgAcFQwZJQYAGRgFZXZlbnQVABYEFkYWRiakAUkcFQAVABUCADwWBBkGGSYABAAAACYAHBUMGSUG" +
+  "ABkYA2FybRUAFgQWWhZaJuoBSRwVABUAFQIAPBYYGQYZJgAEAAAAJgAcFQ4ZJQYAGRgEZmFyZRUAFgQWdhZ2JsQCSRwVABUAFQIAPCkGGSYABA" +
+  "AAABayAxYEJggWsgMAKCBwYXJxdWV0LWNwcC1hcnJvdyB2ZXJzaW9uIDI2LjAuMRlcHAAAHAAAHAAAHAAAHAAAAKYBAABQQVIx";
+
 describe("Parquet", () => {
   const plan = (more = "") => fares({ files: "log.parquet", rest: more });
   const made = (columns: string, rows: string) =>
@@ -151,6 +162,14 @@ describe("Parquet", () => {
       parquet: { "e*f/log.parquet": select, "exf/log.parquet": made("*", TWO.replaceAll("2)", "9)")) },
     });
     expect([found.arms, found.rejects]).toEqual([[["1: 3", "1: 4"]], ""]);
+  });
+  it("with a decimal of more than 38 digits cannot be read, if the plan asks for it: the engine would give other numbers", async () => {
+    const files = { "log.parquet": Buffer.from(WIDE_DECIMAL, "base64") };
+    await expect(reduced(plan(), files)).rejects.toThrow(
+      "log.parquet cannot be read as parquet: its column fare has decimals of 40 digits, of which the engine takes 38; write it with fewer, or as text",
+    );
+    const booked = plan().replace("{sum: fare}", "{event: s}");
+    expect((await reduced(booked, files)).arms).toEqual([["1: 1", "1: 1"]]);
   });
   it("that is cut short cannot be read", async () => {
     await expect(reduced(plan(), { "log.parquet": "PAR1 and no more" })).rejects.toThrow(

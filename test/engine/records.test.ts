@@ -65,10 +65,22 @@ describe("records of a text", () => {
     expect(found.map((record) => record.cells)).toEqual([['a"b', 'c""d', "\n1", '2"']]);
   });
   it("may be spoilt by their quotes: a cell goes on behind the closing one, or never closes", async () => {
-    const found = await recordsOfAnyPieces('"a"b,c\n"d,e\nf');
+    const found = await recordsOfAnyPieces('"a"b,c\n"d,e');
     expect(found).toEqual([
       { line: 1, text: '"a"b,c', cells: null },
-      { line: 2, text: '"d,e\nf', cells: null },
+      { line: 2, text: '"d,e', cells: null },
+    ]);
+  });
+  it("are one for each line where that swallowed several: a quote that was forgotten takes no row away unseen", async () => {
+    const found = await recordsOfAnyPieces('a,b\n"c,d\r\n\r\ne,f\rg,"h"\ni,j\n"k,l\nm,n\n');
+    expect(found).toEqual([
+      { line: 1, text: "a,b", cells: ["a", "b"] },
+      { line: 2, text: '"c,d', cells: null },
+      { line: 4, text: "e,f", cells: null },
+      { line: 5, text: 'g,"h"', cells: null },
+      { line: 6, text: "i,j", cells: ["i", "j"] },
+      { line: 7, text: '"k,l', cells: null },
+      { line: 8, text: "m,n", cells: null },
     ]);
   });
   it("of tabs keep their commas, and the other way round", async () => {

@@ -166,11 +166,22 @@ describe("a record that does not end", () => {
       /log\.csv: the record on line 3 does not end; look for a quote/,
     );
   });
-  it("takes what is left of the file where that is little, as one row that cannot be read", async () => {
+  it("takes what is left of the file where that is little, each line of it a row that cannot be read", async () => {
     const found = await reduced(fares(), {
       "log.csv": `${HEADER}\n${GOOD}\n${OTHER}\nv9,2026-03-02,"s,list,1\n${GOOD}\n${GOOD}\n`,
     });
-    expect(found.rows).toEqual({ rejected: 1, "in-follow-up": 2 });
-    expect(found.rejects).toMatch(/^log\.csv,4,cannot be read/);
+    expect(found.rows).toEqual({ rejected: 3, "in-follow-up": 2 });
+    expect(found.rejects).toMatch(
+      /^log\.csv,4,cannot be read.*\nlog\.csv,5,cannot be read.*\nlog\.csv,6,cannot be read/,
+    );
+  });
+  it("or ends at the next quote of the log, is as many rows that cannot be read as it has lines", async () => {
+    const found = await reduced(fares(), {
+      "log.csv": `${HEADER}\n${GOOD}\nv9,2026-03-02,"s,list,1\n${GOOD}\nv8,2026-03-02,"s",list,1\n${OTHER}\n`,
+    });
+    expect(found.rows).toEqual({ rejected: 3, "in-follow-up": 2 });
+    expect(found.rejects).toMatch(
+      /^log\.csv,3,cannot be read.*\nlog\.csv,4,cannot be read.*\nlog\.csv,5,cannot be read/,
+    );
   });
 });

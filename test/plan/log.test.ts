@@ -102,6 +102,27 @@ plan.yaml:15:35  filters, a
     The log has: arm, at, event, fare, visitor.`);
   });
 
+  it("shows the blanks at the ends of the names that are there", () => {
+    const message = messageAbout(planText(), found([["data/a.csv", ["visitor", " at", "event ", "arm", "fare", ""]]]));
+    expect(message).toContain('No file of this entry has this column. Did you mean " at"?');
+    expect(message).toContain('data/a.csv has: "", " at", arm, "event ", fare, visitor.');
+  });
+
+  it.each([
+    ["data/a.csv", ";", "semicolons", "Save it with commas."],
+    ["data/a.csv", "\t", "tabs", "Call it .tsv."],
+    ["data/a.csv.gz", "|", "upright strokes", "Save it with commas."],
+    ["data/a.tsv", ",", "commas", "Call it .csv."],
+  ])("is not missed in %s where the cells are set apart by %j: that is said, once", (name, sign, called, remedy) => {
+    const message = messageAbout(planText({ filters }), found([[name, [HEADER.join(sign)]]]));
+    expect(message).toBe(`plan.yaml has 1 mistake. Nothing was computed and no file was written.
+
+plan.yaml:4:12  log
+    - files: data/*.csv
+             ^^^^^^^^^^
+    The cells of ${name} are set apart by ${called}, so all of its header is one column. ${remedy}`);
+  });
+
   it("is not missed while some file could not be found, for it may stand there", () => {
     expect(messageAbout(planText({ filters }), found([]))).toBe("");
     const [source] = found([["data/a.csv", HEADER]]).columnsBySource;

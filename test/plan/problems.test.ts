@@ -6,6 +6,16 @@ import { nearest } from "../../src/plan/nearest.ts";
 import { messageOf, planText } from "./plans.ts";
 
 describe("a message", () => {
+  it("about a tab is the only one about indents: the tab upsets what stands below", () => {
+    const text = "metrics:\n  - name: M\n\trole: primary\n    summary: mean\n";
+    expect(messageOf(loadPlan(text))).toBe(`plan.yaml has 1 mistake. Nothing was computed and no file was written.
+
+plan.yaml:3:1
+    role: primary
+    ^
+    A tab indents this line. YAML takes spaces only.`);
+  });
+
   it("shows of a long line the part that is meant", () => {
     const names = Array.from({ length: 30 }, (_, i) => `file-${i}.csv`).join(", ");
     const log = `log: [{files: [${names}, 5, last.csv, and-one-more.csv], columns: {unit: v, time: t, variant: a, event: e}}]`;

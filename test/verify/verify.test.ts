@@ -44,6 +44,15 @@ describe("a report as it was written", () => {
       status: 2,
       text: expect.stringContaining("--base DIR"),
     });
+    expect(await verify(join(alone.folder, "sent.html"), { base: alone.folder })).toEqual({
+      status: 2,
+      text: `${alone.folder}, which --base names, does not hold what the plan names: log.csv. Name the folder that the plan lay in.`,
+    });
+    const none = join(alone.folder, "none");
+    expect(await verify(join(alone.folder, "sent.html"), { base: none })).toEqual({
+      status: 2,
+      text: `${none}, which --base names, is no folder. Name the folder that the plan lay in.`,
+    });
     expect(await verify(join(alone.folder, "sent.html"), { base: on.folder })).toMatchObject({ status: 0 });
     alone.remove();
   });

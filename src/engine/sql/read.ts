@@ -75,7 +75,8 @@ export function jsonKeys(paths: readonly string[], limit: number): Statement {
 export const parquetColumns = (path: string): Statement => sql`DESCRIBE SELECT * FROM ${parquetReader(sql`${path}`)}`;
 
 /** Top-level names as the file has them: the engine's own differ where two are alike but for case. */
-export const parquetNames = (path: string): Statement => sql`SELECT name, num_children FROM parquet_schema(${path})`;
+export const parquetNodes = (path: string): Statement =>
+  sql`SELECT name, num_children, precision FROM parquet_schema(${path})`;
 
 // What folders are called ("arm=list/") says nothing about the rows in them.
 const parquetReader = (files: Statement): Statement => sql`read_parquet(${files}, hive_partitioning = false)`;

@@ -1,5 +1,6 @@
 import type { Problem } from "../types.ts";
 import type { YamlText } from "../yaml.ts";
+import { decisionRules } from "./decision.ts";
 import { enrolmentRules } from "./enrolment.ts";
 import { exactRules } from "./exact.ts";
 import { filterRules } from "./filters.ts";
@@ -22,6 +23,7 @@ const RULES: readonly ((plan: Loose, yaml: YamlText) => readonly Problem[])[] = 
   filterRules,
   subgroupRules,
   nameRules,
+  decisionRules,
   incidentRules,
   lookRules,
 ];

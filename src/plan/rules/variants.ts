@@ -1,3 +1,4 @@
+import { parsePercent } from "../number.ts";
 import type { Problem } from "../types.ts";
 import { items, type Loose } from "./loose.ts";
 
@@ -5,7 +6,7 @@ import { items, type Loose } from "./loose.ts";
 export function variantRules(plan: Loose): readonly Problem[] {
   const variants = items(plan, "variants");
   if (variants.length === 0) return [];
-  return [...controls(variants), ...mixedShares(variants)];
+  return [...controls(variants), ...mixedShares(variants), ...tooMuch(variants)];
 }
 
 function controls(variants: ReturnType<typeof items>): readonly Problem[] {
@@ -34,4 +35,16 @@ function mixedShares(variants: ReturnType<typeof items>): readonly Problem[] {
         ? { path: [...path, "allocation"], at: "value", message }
         : { path, at: "key", message };
     });
+}
+
+/** Shares in percent are of all units; less than all may be in the test, more cannot be. A percent more is rounding. */
+function tooMuch(variants: ReturnType<typeof items>): readonly Problem[] {
+  const shares = variants.map(({ data }) =>
+    typeof data.allocation === "string" ? parsePercent(data.allocation) : null,
+  );
+  if (shares.includes(null)) return [];
+  const percent = shares.reduce((sum, share) => sum + 100 * Number(share), 0);
+  if (percent <= 101) return [];
+  const message = `The allocations add up to ${Number(percent.toPrecision(6))}%. Correct them, or write parts, such as 1 and 2.`;
+  return [{ path: ["variants"], at: "key", message }];
 }

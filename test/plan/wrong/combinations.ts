@@ -13,6 +13,25 @@ export const COMBINATIONS: readonly WrongPlan[] = [
     says: [["variants, map", "The control is already list. Only one variant can be it: remove this one or that."]],
   },
   {
+    title: "shares that are more than all units",
+    plan: { variants: "«variants»: [{name: a, control: true, allocation: 50%}, {name: b, allocation: 60%}]" },
+    says: [["", "The allocations add up to 110%. Correct them, or write parts, such as 1 and 2."]],
+  },
+  {
+    title: "a confidence and a power that are the shares of what may go wrong",
+    plan: { decision: "decision: {confidence: «5%», power: «0.2»}" },
+    says: [
+      [
+        "decision",
+        "A confidence says how often an interval holds the truth, so it is at least 50%. Where 5% may go wrong write 95%.",
+      ],
+      [
+        "decision",
+        "Power says how often a test finds the effect, so it is at least 50%. Where 20% may miss it write 80%.",
+      ],
+    ],
+  },
+  {
     title: "an allocation in percent beside one that is not",
     plan: {
       variants: "variants: [{name: a, control: true, allocation: 50%}, {name: «b»}, {name: c, allocation: «1»}]",

@@ -33,6 +33,38 @@ export const YAML: readonly WrongPlan[] = [
     says: [["question", 'A second key stands on this line. Put text with a colon in it in quotes: "…: …".']],
   },
   {
+    title: "keys that begin further right than the first of their list's item, told where the first of them is",
+    plan: `metrics:
+ - name: Booked
+    «r»ole: primary
+    summary: mean
+    of: {}
+follow-up: 7
+`,
+    says: [
+      [
+        "metrics",
+        "This line is indented further than the one it belongs to. Let keys of one mapping begin in one column.",
+      ],
+    ],
+  },
+  {
+    title: "a key under a value, and a text with a colon elsewhere",
+    plan: "unit-called:\n  one: visitor\n\n    «m»any: visitors\nquestion: «w»hy: because\n",
+    says: [
+      [
+        "unit-called",
+        "This line is indented further than the one it belongs to. Let keys of one mapping begin in one column.",
+      ],
+      ["question", 'A second key stands on this line. Put text with a colon in it in quotes: "…: …".'],
+    ],
+  },
+  {
+    title: "a colon without a space behind it",
+    plan: "experiment: a\n«question:Does» it sell?\nlog: []\n",
+    says: [["", "A space belongs behind the colon of a key."]],
+  },
+  {
     title: "a bracket that stays open",
     plan: { experiment: "experiment: {a: 1", question: "«q»uestion: x" },
     says: [["", "A bracket that opened above is not closed before this line. Close it with ] or }."]],
