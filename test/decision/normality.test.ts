@@ -69,6 +69,18 @@ describe("the normality of an effect", () => {
     expect([first, second].map((effect) => effect && drawnOf(effect).draws)).toEqual([4000, 1000]);
   });
 
+  it("is drawn at fewer units too where figures are: of what decides, and of all where there are up to 12 effects", async () => {
+    const sizes = async (variants: number, role: Metric["role"]) => {
+      const names = Array.from({ length: variants }, (_, v) => (v === 0 ? "list" : `offer ${v}`));
+      const units = skewedUnits(names.map(() => 40));
+      const found = await effectsOfUnits(planWith({ ...MEAN, role }, "normal", names), units);
+      return new Set(found.map((effect) => drawnOf(effect).drawn.length));
+    };
+    expect(await sizes(13, "secondary")).toEqual(new Set([3]));
+    expect(await sizes(14, "secondary")).toEqual(new Set([0]));
+    expect(await sizes(14, "primary")).toEqual(new Set([3]));
+  });
+
   it("repeats itself whatever the order of the units, and draws anew for other values", async () => {
     const units = skewedUnits([300, 200]);
     const drawn = async (of: readonly PairUnit[]) => (await effectsOfUnits(planWith(MEAN), of))[0]?.resampled;

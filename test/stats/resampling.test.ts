@@ -2,7 +2,7 @@ import { describe, expect, it } from "vitest";
 import type { BucketCells } from "../../src/cells/types.ts";
 import { type BootstrapT, bootstrapRelative, bootstrapT } from "../../src/stats/bootstrap-t.ts";
 import { gapOfX, tableOfArms } from "../../src/stats/bucket-cells.ts";
-import { drawRows, studentised, sumRows } from "../../src/stats/draws.ts";
+import { dealRows, drawRows, studentised, sumRows } from "../../src/stats/draws.ts";
 import { generator, type Seed, wordsOf } from "../../src/stats/generator.ts";
 import { dealtToVariant, randomisation } from "../../src/stats/randomisation.ts";
 import { relative } from "../../src/stats/relative.ts";
@@ -180,6 +180,21 @@ describe("the randomisation test", () => {
     const found = drawn(randomisation(cellsOf("mean", units, 22), 40_000, SEED, null));
     // Standard error sqrt(0.3 0.7 / 40,000) = 0.0023.
     expect(Math.abs(found.p - p)).toBeLessThan(0.009);
+  });
+
+  it("deals each choice of rows as often as any other", () => {
+    const order = Uint32Array.from({ length: 5 }, (_, row) => row);
+    const counts = new Map<string, number>();
+    const [words, fill] = [new Uint32Array(2), wordsOf(SEED)];
+    for (let deal = 0; deal < 20_000; deal++) {
+      dealRows(order, words, fill);
+      const choice = String(order.slice(0, 2).sort());
+      counts.set(choice, (counts.get(choice) ?? 0) + 1);
+      expect(new Set(order).size).toBe(5);
+    }
+    // Ten choices, 2,000 each: Pearson's chi-square with 9 degrees of freedom is above 34 once in 10,000.
+    expect(counts.size).toBe(10);
+    expect([...counts.values()].reduce((sum, n) => sum + (n - 2000) ** 2 / 2000, 0)).toBeLessThan(34);
   });
 
   it("does not change when the arms change places", () => {
