@@ -182,19 +182,24 @@ describe("the randomisation test", () => {
     expect(Math.abs(found.p - p)).toBeLessThan(0.009);
   });
 
-  it("deals each choice of rows as often as any other", () => {
+  it("deals each choice of rows as often as any other, whatever was dealt before", () => {
     const order = Uint32Array.from({ length: 5 }, (_, row) => row);
     const counts = new Map<string, number>();
     const [words, fill] = [new Uint32Array(2), wordsOf(SEED)];
+    let [before, again] = ["", 0];
     for (let deal = 0; deal < 20_000; deal++) {
       dealRows(order, words, fill);
       const choice = String(order.slice(0, 2).sort());
       counts.set(choice, (counts.get(choice) ?? 0) + 1);
+      again += Number(choice === before);
+      before = choice;
       expect(new Set(order).size).toBe(5);
     }
     // Ten choices, 2,000 each: Pearson's chi-square with 9 degrees of freedom is above 34 once in 10,000.
     expect(counts.size).toBe(10);
     expect([...counts.values()].reduce((sum, n) => sum + (n - 2000) ** 2 / 2000, 0)).toBeLessThan(34);
+    // 2,000 again, standard deviation 42.
+    expect(Math.abs(again - 2000)).toBeLessThan(170);
   });
 
   it("does not change when the arms change places", () => {
