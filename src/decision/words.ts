@@ -75,8 +75,8 @@ export function surelyWorse(effect: Effect, plan: Plan): boolean {
 }
 
 /**
- * The absolute amount beside a relative one: "For every 1,000 visitors that is about 12 more (95% interval: 8 to 16
- * more)." Null where the sentence of the effect gives the absolute amount already.
+ * The absolute amount beside a relative one: 'Booked: for every 1,000 visitors with "calendar" instead of "list" about 12 more
+ * (95% interval: 8 to 16 more).' It stands apart from the relative one, so it names its measure. Null where the sentence of the effect gives the absolute amount already.
  */
 export function absoluteSentence(effect: Effect, plan: Plan): string | null {
   const metric = metricOf(effect, plan);
@@ -86,9 +86,9 @@ export function absoluteSentence(effect: Effect, plan: Plan): string | null {
   const label = intervalLabel(plan);
   const write = (shown: Interval, as: Scale) =>
     `${estimateInWords(shown, as, comparative)} (${label}: ${intervalInWords(shown, as, comparative)})`;
-  if (!counts(metric)) return `That is ${write(interval, scale)}.`;
+  if (!counts(metric)) return `${metric.name}: that is ${write(interval, scale)}.`;
   const many = enough(interval);
-  return `For every ${count(many)} ${plan.unitCalled.many} that is about ${write(times(interval, many), { kind: "amount", unit: null, places: 0 })}.`;
+  return `${metric.name}: for every ${count(many)} ${plan.unitCalled.many} with ${quoted(effect.variant)} instead of ${quoted(effect.control)} about ${write(times(interval, many), { kind: "amount", unit: null, places: 0 })}.`;
 }
 
 /** 1,000, or the power of ten at which both ends are told from 0 and from each other in whole numbers; at most 10^6. */

@@ -260,7 +260,7 @@ describe("what comes next", () => {
 
   it("after adopt is the gain in whole visitors", () => {
     expect(next(FERRY, [GAIN, HELD])).toEqual([
-      "For every 1,000 visitors that is about 12 more (95% interval: 8 to 16 more).",
+      'Booked: for every 1,000 visitors with "calendar" instead of "list" about 12 more (95% interval: 8 to 16 more).',
     ]);
   });
 

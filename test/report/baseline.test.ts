@@ -95,8 +95,8 @@ describe("the groups before enrolment", () => {
       ["No value", "\u22120.707"],
     ]);
     expect(country?.rows[0]?.cells).toEqual([
-      { figure: "25.0%", beside: "1 visitor" },
-      { figure: "75.0%", beside: "3 visitors" },
+      { figure: "25.0%", beside: "1" },
+      { figure: "75.0%", beside: "3" },
     ]);
     expect(table?.reading).toContain("share of all visitors enrolled");
     expect(table?.reading).not.toContain("Mean with");

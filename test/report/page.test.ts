@@ -116,7 +116,7 @@ describe("the page", () => {
       "Must not get worse: Support contacts, limit 5% more.",
       "12.0% \u2192 13.2%",
       "+10.0% (+6.5% to +13.7%)",
-      "For every 1,000 visitors that is about 12 more",
+      "Booked: for every 1,000 visitors with \u201ccalendar\u201d instead of \u201clist\u201d about 12 more",
       "Can the data be trusted?",
       "Counted: 100,301 of 104,512 visitors. The other 4,211 are listed by reason in section 4.",
       "Not answered by this test: other seasons than March, and visitors who return after more than 7 days.",
@@ -131,6 +131,24 @@ describe("the page", () => {
     expect(page).toMatch(
       /decides .*Booked .*asked \+5%: not settled .*must not get worse .*Support contacts .*limit \+5%: not settled .*for information .*Fare per visitor/,
     );
+  });
+
+  // "The filter "a" removed 4,032 rows" stood for four filters
+  it("names what else a check looked at that passed", async () => {
+    const part = { result: "pass", remedy: "", figures: {} } as const;
+    const check = {
+      ...part,
+      id: "filters",
+      strong: false,
+      sentence: 'The filter "a" removed 4 rows.',
+      parts: [
+        { ...part, about: "a", sentence: 'The filter "a" removed 4 rows.' },
+        { ...part, about: "b", sentence: 'The filter "b" removed 2 rows.' },
+        { ...part, about: "c, of rows", sentence: 'The filter "c, of rows" removed 1 row.' },
+      ],
+    };
+    const trust = textOf(sectionOf((await renderReport({ ...adopt, checks: [check] })).html, "trust"));
+    expect(trust).toContain("The filter \u201ca\u201d removed 4 rows. Passed too: b; c, of rows.");
   });
 
   it("names one variant of several with its measure wherever a part is of it alone", async () => {

@@ -4,7 +4,7 @@ import type { Reduction, SubgroupColumn } from "../../engine/types.ts";
 import type { Plan } from "../../plan/types.ts";
 import type { ArmFigures } from "../../stats/index.ts";
 import { balance, standardisedShares } from "../../stats/index.ts";
-import { capital, count, fixed, percent, plural, quoted } from "../../words/index.ts";
+import { capital, count, fixed, percent, quoted } from "../../words/index.ts";
 import { NONE, sideBySide } from "../effect-text.ts";
 
 /**
@@ -46,7 +46,9 @@ export function baselineTable(plan: Plan, reduction: Reduction): BaselineTable |
       : [`Mean with its standard deviation, or share, over the ${many} counted that have a value.`]),
     ...(columns.length === 0
       ? []
-      : [`Of a value at enrolment: the share of all ${many} enrolled with that variant, counted or not.`]),
+      : [
+          `Of a value at enrolment: the share of all ${many} enrolled with that variant, counted or not, and how many they are.`,
+        ]),
     "Standardised difference: over the standard deviation of both groups, so that it does not grow with their size; beyond 0.1 it is worth a look. Whether chance explains a difference is judged in section 3.",
   ];
   return {
@@ -61,7 +63,6 @@ export function baselineTable(plan: Plan, reduction: Reduction): BaselineTable |
 /** The cells of a level's effect hold the counted alone; randomisation made those who are enrolled alike. */
 function levelRows(plan: Plan, { levels }: SubgroupColumn): BaselineRow[] {
   const control = plan.variants.findIndex(({ isControl }) => isControl);
-  const { one, many } = plan.unitCalled;
   const all = plan.variants.map((_, v) => levels.reduce((sum, { enrolled }) => sum + (enrolled[v] ?? 0), 0));
   return levels.map(({ level, enrolled }) => {
     const arms = all.map((of, v) => ({ units: enrolled[v] ?? 0, of }));
@@ -70,7 +71,7 @@ function levelRows(plan: Plan, { levels }: SubgroupColumn): BaselineRow[] {
       what: levelHead(level),
       cells: arms.map(({ units, of }) => ({
         figure: of === 0 ? NONE : percent(units / of),
-        beside: plural(units, one, many),
+        beside: count(units),
       })),
       standardised: largest(
         arms.filter((_, v) => v !== control).map((arm) => (own === undefined ? null : standardisedShares(own, arm))),

@@ -17,6 +17,8 @@ export interface CheckText {
   readonly sentence: string;
   readonly remedy: string;
   readonly parts: readonly { readonly about: string; readonly outcome: string; readonly sentence: string }[];
+  /** What else it looked at than its sentence tells; of a check that passed that is all there is to say of it. */
+  readonly others: string;
   readonly figures: readonly { readonly name: string; readonly value: string }[];
 }
 
@@ -93,6 +95,10 @@ function checkText(check: Check): CheckText {
     parts: check.parts
       .filter(({ sentence }) => sentence !== check.sentence)
       .map(({ about, result, sentence }) => ({ about, outcome: outcomeText(result, false), sentence })),
+    others: check.parts
+      .slice(1)
+      .map(({ about }) => about)
+      .join("; "),
     figures: figureTexts([...Object.entries(check.figures)], ""),
   };
 }

@@ -6,6 +6,7 @@ import { rowLine, unitLine } from "../ledger.ts";
 
 /** Section 4: the flow of units, the ledger of rows, and that of each metric's rows. */
 export interface CountedSection {
+  readonly one: string;
   readonly many: string;
   readonly variants: readonly string[];
   readonly units: readonly FlowLine[];
@@ -45,6 +46,7 @@ export function countedSection(
   rejectsFile = "rejects.csv",
 ): CountedSection {
   return {
+    one: plan.unitCalled.one,
     many: plan.unitCalled.many,
     variants: plan.variants.map(({ name }) => name),
     units: unitFlow(plan, reduction),

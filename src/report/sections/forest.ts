@@ -130,7 +130,7 @@ function rowTexts(text: EffectText) {
 
 /** How the drawing is read, and what of this report is not as a reader would expect it. */
 function readingText(plan: Plan, effects: readonly Effect[], beyond: boolean): string {
-  const control = controlOf(plan).name;
+  const control = quoted(controlOf(plan).name);
   const variants = plan.variants.length - 1;
   const ofAmount = (kind: Amount["kind"]) => effects.some((effect) => ruleOf(metricOf(effect, plan))?.kind === kind);
   return [
