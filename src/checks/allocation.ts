@@ -15,6 +15,7 @@ import { asCheck, type Finding, passed } from "./finding.ts";
 import type { Step } from "./flow.ts";
 import { analysedUnits, sum } from "./ledger.ts";
 import { byP } from "./limits.ts";
+import { absentVariants } from "./never-occurs.ts";
 import { plannedShares } from "./planned-shares.ts";
 import type { Check } from "./types.ts";
 import { byChance, groups, perVariant } from "./words.ts";
@@ -60,6 +61,12 @@ function asEnrolled(plan: Plan, reduction: Reduction, found: Split): Finding {
   const step = brokenAt(plan, stepsToEnrolled(reduction), result);
   const lies = step === null ? whereItLies(plan, reduction, "enrolled") : [];
   const { many, one } = plan.unitCalled;
+  // A name that is written otherwise is no loss of units.
+  const [absent] = absentVariants(plan, reduction);
+  if (absent !== undefined) {
+    const sentence = `${unevenSentence(plan, "Enrolled", found)} ${absent.sentence}`;
+    return { about, result, strong: false, sentence, remedy: absent.remedy, figures: figuresOf(plan, found) };
+  }
   return {
     about,
     result,

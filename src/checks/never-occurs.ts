@@ -7,12 +7,11 @@ import type { Check } from "./types.ts";
 
 /** Events and variants of the plan that no row has: often a name written otherwise in the log. */
 export function neverOccurs(plan: Plan, reduction: Reduction): Check | null {
-  const { missingEvents, missingVariants, events, variants } = reduction.facts;
+  const { missingEvents, missingVariants, events } = reduction.facts;
   const planEvents = eventsOf(plan);
-  const planVariants = plan.variants.map((variant) => variant.name);
   const missing = [
     ...missingEvents.map((name) => judge("event", name, events, planEvents)),
-    ...missingVariants.map((name) => judge("variant", name, variants, planVariants)),
+    ...absentVariants(plan, reduction),
   ];
   const what = planEvents.length === 0 ? "Every variant" : "Every event and variant";
   const all = passed("names", `${what} that the plan names occurs in the log.`, {});
@@ -20,6 +19,12 @@ export function neverOccurs(plan: Plan, reduction: Reduction): Check | null {
     events: missingEvents,
     variants: missingVariants,
   });
+}
+
+/** The variants of the plan that no row names, each with the nearest that does occur. */
+export function absentVariants(plan: Plan, { facts }: Reduction): Finding[] {
+  const named = plan.variants.map((variant) => variant.name);
+  return facts.missingVariants.map((name) => judge("variant", name, facts.variants, named));
 }
 
 function judge(

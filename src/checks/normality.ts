@@ -46,12 +46,8 @@ function judge(plan: Plan, metric: Metric, { variant, method, normality: { tails
   const name = plan.variants.length > 2 ? `${metric.name} with ${quoted(variant)}` : metric.name;
   const { level, shapesDiffer, nominal, reported } = tails;
   if (level === "near" && !shapesDiffer) {
-    const both = `${chance(reported.lowerTail)} and ${chance(reported.upperTail)}`;
-    return passed(
-      metric.name,
-      `${name}: the nominal ${percent(nominal)} tails are about ${both}, near enough.`,
-      figures,
-    );
+    const both = `about ${chance(reported.lowerTail)} and ${chance(reported.upperTail)}`;
+    return passed(metric.name, `${name}: the nominal ${percent(nominal)} tails are ${both}, near enough.`, figures);
   }
   const start = `${name}: ${tailsInWords(tails)}`;
   const off = level === "near" ? "" : `, off by more than ${level === "strong" ? "half" : "a fifth"}`;
@@ -71,7 +67,7 @@ function judge(plan: Plan, metric: Metric, { variant, method, normality: { tails
 
 /** "the nominal 2.5% tails are about 1.6% (the interval wholly below the truth) and 3.4% (wholly above)". */
 export function tailsInWords({ nominal, reported: { lowerTail, upperTail } }: Tails): string {
-  return `the nominal ${percent(nominal)} tails are about ${chance(lowerTail)} (the interval wholly below the truth) and ${chance(upperTail)} (wholly above)`;
+  return `the nominal ${percent(nominal)} tails are ${isFar(lowerTail) ? "" : "about "}${chance(lowerTail)} (the interval wholly below the truth) and ${chance(upperTail)} (wholly above)`;
 }
 
 function shapesInWords({ own, pooled }: Tails): string {
@@ -81,9 +77,10 @@ function shapesInWords({ own, pooled }: Tails): string {
 
 /** Far from the normal curve the expansion says only "far": it can leave 0 to 1, and is not to be believed near there. */
 function chance(tail: number): string {
-  if (tail < 0.0001) return "next to 0%";
-  return tail > 0.3 ? "over 30%" : percent(tail);
+  if (!isFar(tail)) return percent(tail);
+  return tail > 0.3 ? "over 30%" : "next to 0%";
 }
+const isFar = (tail: number): boolean => tail < 0.0001 || tail > 0.3;
 
 function remedy({ unitCalled }: Plan, metric: Metric, tails: Tails, method: Method): string {
   const isShare = metric.summary === "proportion";

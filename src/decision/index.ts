@@ -25,7 +25,16 @@ export { type IncidentOutcome, incidentOutcomes } from "./incidents.ts";
 export { atThisLook, lookAccount } from "./looks.ts";
 export { lookSentences } from "./looks-words.ts";
 // which interval of an effect a reader sees, and what the plan asks in words
-export { absolute, amountText, type Measure, measure, metricOf, ruleInWords, signedRule } from "./measure.ts";
+export {
+  absolute,
+  amountText,
+  type Measure,
+  measure,
+  metricOf,
+  pointsText,
+  ruleInWords,
+  signedRule,
+} from "./measure.ts";
 export { nextSentences, untilThen, whyNotSettled } from "./next.ts";
 // how large a next test is to be
 export {

@@ -53,8 +53,14 @@ export function counts(metric: Metric): boolean {
 export function amountText(metric: Metric, amount: Amount): string {
   if (amount.kind === "relative") return planPercent(amount.value);
   const scale = absoluteScale(metric);
-  if (scale.kind === "points") return `${plain(amount.value * 100)} percentage points`;
+  if (scale.kind === "points") return pointsText(amount.value);
   return scale.kind === "amount" && scale.unit !== null ? `${plain(amount.value)} ${scale.unit}` : plain(amount.value);
+}
+
+/** A share as "0.2 percentage points", "1 percentage point". */
+export function pointsText(share: number): string {
+  const points = plain(share * 100);
+  return `${points} percentage ${points === "1" ? "point" : "points"}`;
 }
 
 /** "5% more": a gain to reach, or of a guardrail a harm not to pass. */

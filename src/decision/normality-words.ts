@@ -21,22 +21,19 @@ export function otherIntervalSentence(effect: Effect, plan: Plan, effects: reado
   const [counts, beside] = [intervalText(effect, plan), intervalText(other, plan)];
   if (counts === null || beside === null) return null;
   const isCorrected = deciding(effect).difference.method === "skew-corrected";
-  const name = PLAIN[deciding(isCorrected ? other : effect).difference.method] ?? "plain";
+  const plain = PLAIN[deciding(isCorrected ? other : effect).difference.method] ?? "the plain one";
   const same = counts === beside;
   const [first, second] = isCorrected
     ? [
         `The corrected interval counts, ${counts}`,
-        same ? `and the ${name} one is the same to these digits` : `the ${name} one is ${beside}`,
+        same ? `and ${plain} is the same to these digits` : `${plain} is ${beside}`,
       ]
-    : [
-        `The corrected interval is ${beside}`,
-        same ? `the same as the ${name} one to these digits` : `the ${name} one ${counts}`,
-      ];
+    : [`The corrected interval is ${beside}`, same ? `the same as ${plain} to these digits` : `${plain} ${counts}`];
   const end = effects === null ? "" : `; ${conclusionBy(effect, other, plan, effects)}`;
   return `${first}, ${second}${end}.${uncorrected(normality)}`;
 }
 
-const PLAIN: { readonly [method: string]: string } = { normal: "normal", welch: "Welch\u2019s" };
+const PLAIN: { readonly [method: string]: string } = { normal: "the normal one", welch: "Welch\u2019s" };
 
 /** Whether the rule would decide otherwise if this one contrast had its other interval. */
 function conclusionBy(effect: Effect, other: Effect, plan: Plan, effects: readonly Effect[]): string {

@@ -140,7 +140,7 @@ function markText(effect: Effect, plan: Plan): string {
   const rule = ruleOf(metric);
   if (rule === null) return STANDS_TO_ZERO[effect.zone] ?? "not settled";
   const sign = signedRule(metric, rule) > 0 ? "+" : MINUS;
-  const amount = amountText(metric, rule).replace("percentage points", "points");
+  const amount = amountText(metric, rule).replace(/percentage (points?)$/, "$1");
   return `${effect.role === "guardrail" ? "limit" : "asked"} ${sign}${amount}: ${STANDS[effect.zone]}`;
 }
 

@@ -1,4 +1,4 @@
-import { levelAt, type SizeAnswer, type SizeQuestion } from "../decision/index.ts";
+import { levelAt, pointsText, type SizeAnswer, type SizeQuestion } from "../decision/index.ts";
 import { casesText, count, fixed, list, plain, planPercent, plural, signedPercent, spanText } from "../words/index.ts";
 
 /** The size of a test to come, as `closeout size` prints it. */
@@ -37,7 +37,7 @@ function amountText(
   { kind, value }: { readonly kind: string; readonly value: number },
 ): string {
   if (kind === "relative") return planPercent(value);
-  return level.kind === "share" ? `${plain(value * 100)} percentage points` : plain(value);
+  return level.kind === "share" ? pointsText(value) : plain(value);
 }
 
 function levelText({ level }: SizeQuestion, value: number): string {

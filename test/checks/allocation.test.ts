@@ -35,6 +35,22 @@ describe("allocation", () => {
     );
   });
 
+  it("names the variant that the log writes otherwise, and sends nobody to look for lost units", () => {
+    const plan = planOf({ variants: variantsOf({ list: 1, Calendar: 1 }) });
+    const variants = [
+      { value: "list", rows: 500 },
+      { value: "calendar", rows: 500 },
+    ];
+    const found = check({ enrolled: [500, 0], facts: { missingVariants: ["Calendar"], variants } }, plan);
+    expect(found.result).toBe("fail");
+    expect(found.sentence).toMatch(
+      /No row of the log has the variant "Calendar"\. The nearest that does occur is "calendar"\.$/,
+    );
+    expect(found.remedy).toBe(
+      "If the log writes it otherwise, correct the name in the plan; if such rows should exist, find out why the log lacks them.",
+    );
+  });
+
   it("has a degree of freedom less than variants", () => {
     const plan = planOf({ variants: variantsOf({ list: 1, calendar: 1, map: 1 }) });
     const found = check({ enrolled: [5000, 5000, 5335] }, plan);

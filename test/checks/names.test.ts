@@ -76,6 +76,8 @@ describe("never-occurs", () => {
 
   it("takes the first of equally near names", () => {
     expect(nearest("abc", ["abd", "abe"])).toBe("abd");
+    expect(nearest("b", ["a", "B"])).toBe("B");
+    expect(nearest("List", ["Lift", "LISTE", "LIST", "list"])).toBe("list");
     expect(nearest("abc", [])).toBeNull();
   });
 });

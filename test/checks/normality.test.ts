@@ -87,6 +87,13 @@ describe("the check of the normal approximation", () => {
     expect(strong?.sentence).toMatch(/about 8\.2% .* and 0\.30% .*, off by more than half\.$/);
   });
 
+  it("does not say about how much where it says more than how much", () => {
+    const far = find("normality", planOfMetrics(FARE), [contrastOf({ own: [35, 0.001], level: "strong" })]);
+    expect(far?.sentence).toBe(
+      "Fare: the nominal 2.5% tails are over 30% (the interval wholly below the truth) and next to 0% (wholly above), off by more than half.",
+    );
+  });
+
   it("is a caution where the arms' shapes differ, with a cap as the remedy", () => {
     const shapes = { own: [2.7, 2.3], pooled: [3.4, 1.7], shapesDiffer: true } as const;
     expect(find("normality", planOfMetrics(FARE), [contrastOf(shapes)])).toMatchObject({
@@ -121,7 +128,7 @@ describe("the check of the normal approximation", () => {
       "Booked: with so few events the score interval counts, which does not lean on the normal curve.",
     );
     const corrected = find("normality", planOfMetrics(BOOKED), of("skew-corrected"));
-    expect(corrected?.sentence).toMatch(/about next to 0% .* The corrected interval counts here\.$/);
+    expect(corrected?.sentence).toMatch(/are next to 0% .* The corrected interval counts here\.$/);
     expect(corrected?.remedy).toBe("In the plan of a next test, ask for more visitors.");
   });
 

@@ -201,13 +201,13 @@ describe("the sentence on the other interval", () => {
   const effectWith = (
     own: readonly [number, number, number],
     other: readonly [number, number, number] | null,
-    counts: "normal" | "skew-corrected" = "normal",
+    counts: "normal" | "welch" | "skew-corrected" = "normal",
   ): Effect => {
-    const method = (of: "normal" | "skew-corrected", ends: readonly [number, number, number]) => {
+    const method = (of: "normal" | "welch" | "skew-corrected", ends: readonly [number, number, number]) => {
       const contrast = contrastOf(100, ends);
       return { ...contrast, difference: { ...contrast.difference, method: of } };
     };
-    const beside = counts === "normal" ? "skew-corrected" : "normal";
+    const beside = counts === "skew-corrected" ? "normal" : "skew-corrected";
     return {
       ...effectOf(fare, method(counts, own)),
       normality: {
@@ -226,6 +226,13 @@ describe("the sentence on the other interval", () => {
     const effect = effectWith([0.02, 0.06, 0.1], [0.025, 0.06, 0.11]);
     expect(otherIntervalSentence(effect, plan, [effect])).toBe(
       "The corrected interval is 2.5% to 11.0% higher, the normal one 2.0% to 10.0% higher; the conclusion stays.",
+    );
+  });
+
+  it("calls Welch's interval by his name alone", () => {
+    const effect = effectWith([0.02, 0.06, 0.1], [0.025, 0.06, 0.11], "welch");
+    expect(otherIntervalSentence(effect, plan, [effect])).toBe(
+      "The corrected interval is 2.5% to 11.0% higher, Welch\u2019s 2.0% to 10.0% higher; the conclusion stays.",
     );
   });
 

@@ -11,6 +11,7 @@ const guardrail = { role: "guardrail", summary: "mean", goodIs: "lower", margin:
 it("says what is asked of a measure as one would count it", () => {
   expect(asked({ worthwhile: relative })).toBe('at least 5% more visitors with at least one "booking" row');
   expect(asked({ worthwhile: { kind: "absolute", value: 0.002 } })).toBe("at least 0.2 percentage points higher");
+  expect(asked({ worthwhile: { kind: "absolute", value: 0.01 } })).toBe("at least 1 percentage point higher");
   expect(asked({})).toBe('any proven gain: more visitors with at least one "booking" row');
   expect(asked({ summary: "mean", worthwhile: relative, goodIs: "lower" })).toBe(
     'at least 5% fewer "booking" rows for each visitor',
