@@ -9,7 +9,7 @@ import type { CheckJson, EffectJson, ReportJson, SensitivityJson } from "./json-
 import { provenanceJson } from "./provenance.ts";
 import type { ReportInputs } from "./types.ts";
 
-/** The report's data as DESIGN 7 lays it down. What this version does not build yet is an empty list or null. */
+/** The report's data as DESIGN 7 lays it down. */
 export function reportJson(inputs: ReportInputs): ReportJson {
   const { plan, reduction, conclusion, rerun } = inputs;
   const report: ReportJson = {
