@@ -1,6 +1,7 @@
 import type { Command } from "commander";
 import type { SizeQuestion } from "../decision/index.ts";
 import { parseNumber, parsePercent } from "../plan/number.ts";
+import { tooLow } from "../plan/rules/decision.ts";
 import type { Library } from "./library.ts";
 import type { ExitStatus, Terminal } from "./terminal.ts";
 import { type CommandFacts, wrongArguments } from "./usage.ts";
@@ -93,6 +94,13 @@ export function questionOf(raw: RawOptions): SizeQuestion | { readonly problems:
   const allocation = read("allocation", raw.allocation, parts(raw.allocation), "two parts or more, such as 1:1");
   const confidence = share("confidence", raw.confidence);
   const power = share("power", raw.power);
+  for (const [key, value] of [
+    ["confidence", confidence],
+    ["power", power],
+  ] as const) {
+    const low = value === null ? null : tooLow(key, value, `--${key}`);
+    if (low !== null) problems.push(low);
+  }
   const unitsADay = raw.aDay === undefined ? null : positive("a-day", raw.aDay);
   const looks = looksOf(raw, read, problems);
   const asked =

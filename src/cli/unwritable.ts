@@ -1,3 +1,5 @@
+import { basename, dirname } from "node:path";
+
 const REASONS: Readonly<Record<string, string>> = {
   ENOENT: "there is no such folder, and none can be made",
   EACCES: "you do not have the right to",
@@ -16,7 +18,9 @@ const WRITING = ["mkdir", "mkdtemp", "open", "write", "rename", "copyfile"];
 /** Where a file could not be written or opened: the user's to mend, not a fault of ours. Null for any other error. */
 export function unwritableText(error: unknown): string | null {
   if (!(error instanceof Error)) return null;
-  const { code = "", syscall = "", path = "a file" } = error as NodeJS.ErrnoException;
+  const { code = "", syscall = "", path: given = "a file" } = error as NodeJS.ErrnoException;
+  // The folder that a run prepares its files in is ours; the user's is the one around it.
+  const path = /^\.closeout-/.test(basename(given)) ? dirname(given) : given;
   const reason = REASONS[code];
   if (reason === undefined || !WRITING.includes(syscall)) return null;
   // A file of the log is opened too, so that only the others are surely about the place of the results.

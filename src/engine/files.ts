@@ -55,11 +55,16 @@ export async function logFiles(
 }
 
 async function noFile(source: number, item: number | null, pattern: string, folder: string): Promise<Problem> {
-  const isFolder = await stat(path.resolve(folder, pattern)).then(
-    (found) => found.isDirectory(),
-    () => false,
+  const there = await stat(path.resolve(folder, pattern)).then(
+    (found) => (found.isDirectory() ? "folder" : "nothing"),
+    (error: NodeJS.ErrnoException) => (error.code === "EACCES" ? "forbidden" : "nothing"),
   );
-  return noSuchFile(source, item, pattern, await neighbours(pattern, folder), isFolder);
+  return noSuchFile(source, item, pattern, await neighbours(pattern, folder), there);
+}
+
+/** What tells that a file was written to: its size and the moment of its last change. */
+export async function states(files: readonly LogFile[]): Promise<string[]> {
+  return Promise.all(files.map(({ path: file }) => stat(file).then(({ size, mtimeMs }) => `${size} ${mtimeMs}`)));
 }
 
 /** What else lies where a path leads, for a nearest name. */

@@ -1,7 +1,7 @@
 import type { FoundLog, PlanSource, Problem } from "../plan/index.ts";
 import { isWhole, packedWith, textOf } from "./compression.ts";
 import { type Engine, text } from "./engine.ts";
-import { enginePath, type LogFile, logFiles } from "./files.ts";
+import { enginePath, type LogFile, logFiles, states } from "./files.ts";
 import { records } from "./records.ts";
 import { type ColumnKind, type FileGroup, kindOf } from "./source.ts";
 import { jsonKeys, parquetColumns, parquetNodes } from "./sql/read.ts";
@@ -14,6 +14,8 @@ export interface OpenLog {
   readonly groups: readonly FileGroup[];
   readonly found: FoundLog;
   readonly problems: readonly Problem[];
+  /** Of each file when it was opened, see `states`. */
+  readonly opened: readonly string[];
 }
 
 interface Header {
@@ -31,6 +33,7 @@ export async function openLog(
   workFolder: string,
 ): Promise<OpenLog> {
   const { files, problems } = await logFiles(source.log, folder);
+  const atOpening = await states(files);
   const wanted = new Set(source.mentions.map((mention) => mention.name));
   const opened: { file: LogFile; path: string; header: Header }[] = [];
   for (const [index, file] of files.entries()) {
@@ -51,16 +54,19 @@ export async function openLog(
       .map(({ file, header }) => ({ name: file.name, columns: header.columns })),
     isPartial: problems.some((problem) => problem.path[1] === entry),
   }));
-  return { files, groups: [...groups.values()], found: { columnsBySource }, problems };
+  return { files, groups: [...groups.values()], found: { columnsBySource }, problems, opened: atOpening };
 }
 
 /** Several files are told apart by a column that the reader adds: a file with one of that name is read by itself. */
 const standsAlone = ({ engineNames }: Header) => engineNames.some((column) => column.toLowerCase() === "file_index");
 
 async function headerOf(file: LogFile, path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<Header> {
+  const packed = await packedWith(file.path).catch((cause: NodeJS.ErrnoException) => {
+    if (cause.code !== "EACCES") throw cause;
+    throw new UnusableLog(`${file.name} may not be read by you. Ask for the right to read it.`, { cause });
+  });
   try {
-    const packed = /\.(gz|zst)$/i.test(file.name) ? null : await packedWith(file.path);
-    if (packed !== null)
+    if (packed !== null && !/\.(gz|zst)$/i.test(file.name))
       throw new Error(`it is packed with ${packed}; call it ${file.name}${packed === "gzip" ? ".gz" : ".zst"}`);
     return await readHeader(file, path, wanted, engine);
   } catch (cause) {

@@ -2,7 +2,7 @@ import type { Plan } from "../plan/index.ts";
 import { list, plural } from "../words/index.ts";
 import { contentOf, isWhole } from "./compression.ts";
 import { count, type Engine, type Row } from "./engine.ts";
-import { fingerprint, type LogFile } from "./files.ts";
+import { fingerprint, type LogFile, states } from "./files.ts";
 import { FATE, type Layout } from "./layout.ts";
 import { reasonText } from "./ledger.ts";
 import type { OpenLog } from "./open.ts";
@@ -146,6 +146,14 @@ const isRefusal = (cause: unknown) => cause instanceof Error && cause.message.in
 async function dropRejects(engine: Engine): Promise<void> {
   await engine.run(sql`DROP TABLE IF EXISTS reject_errors`);
   await engine.run(sql`DROP TABLE IF EXISTS reject_scans`);
+}
+
+/** A file that was written to meanwhile: its rows and its fingerprint may be of two moments. */
+export async function refuseChanged({ files, opened }: OpenLog): Promise<void> {
+  const now = await states(files);
+  const changed = files.find((_, i) => now[i] !== opened[i]);
+  if (changed !== undefined)
+    throw new UnusableLog(`${changed.name} was changed while it was read. Run this again when nothing writes to it.`);
 }
 
 /** A log of which no row can be used is refused. */

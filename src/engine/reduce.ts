@@ -13,7 +13,7 @@ import { logEnd, type SourceSpan, spansOf } from "./logEnd.ts";
 import { metricLedgers } from "./metricLedger.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
-import { inputFingerprints, readRows, refuseWithoutRows } from "./readRows.ts";
+import { inputFingerprints, readRows, refuseChanged, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
 import { openSession, type Session } from "./session.ts";
 import { sinceEnrolment } from "./sinceEnrolment.ts";
@@ -194,6 +194,7 @@ async function stages(
   if (options.rejectsTo !== undefined) {
     await writeRejects(options.rejectsTo, { plan, layout, files: log.files, groups, zone }, engine, dialect);
   }
+  await refuseChanged(log);
   stage("done", 1);
   const reduction = {
     engine: { name: engine.name, version: engine.version },

@@ -81,10 +81,13 @@ export function noSuchFile(
   item: number | null,
   pattern: string,
   neighbours: Iterable<string> = [],
-  isFolder = false,
+  there: "nothing" | "folder" | "forbidden" = "nothing",
 ): Problem {
   const path = ["log", entry, "files", ...(item === null ? [] : [item])];
-  if (isFolder) {
+  if (there === "forbidden") {
+    return { path, at: "value", message: `${pattern} may not be read by you. Ask for the right to read it.` };
+  }
+  if (there === "folder") {
     const inside = `${pattern.replace(/\/+$/, "")}/*.csv`;
     return { path, at: "value", message: `${pattern} is a folder. Name the files in it, such as ${inside}.` };
   }

@@ -133,8 +133,8 @@ describe("closeout report", () => {
   it.each([
     [
       "mkdtemp",
-      "/no/such/.closeout-vm",
-      "/no/such/.closeout-vm cannot be written: there is no such folder, and none can be made. Name another folder.",
+      "/no/such/.closeout-vm-1-x",
+      "/no/such cannot be written: there is no such folder, and none can be made. Name another folder.",
     ],
     ["open", "no/such.html", "no/such.html cannot be opened: there is no such folder, or file."],
   ])("and says so too of a folder that %s does not find", async (syscall, path, told) => {

@@ -120,7 +120,14 @@ In the plan: planned: {units: 235079}`);
     ["--share 12% --worthwhile 5% --allocation 50%:1", "--allocation 50%:1: expected two parts or more, such as 1:1."],
     ["--share 12% --worthwhile 5% --allocation 1", "--allocation 1: expected two parts or more, such as 1:1."],
     ["--share 12% --worthwhile 5% --power 1", "--power 1: expected a share between 0 and 1"],
-    ["--share 12% --worthwhile 5% --power 2%", "--power is to be above 2.5%: so often chance alone shows a gain."],
+    [
+      "--share 12% --worthwhile 5% --confidence 5%",
+      "--confidence says how often an interval holds the truth, so it is at least 50%. Where 5% may go wrong write 95%.",
+    ],
+    [
+      "--share 12% --worthwhile 5% --power 0.2",
+      "--power says how often a test finds the effect, so it is at least 50%. Where 20% may miss it write 80%.",
+    ],
     ["--share 12% --worthwhile 5% --a-day 0", "--a-day 0: expected a number above 0."],
     ["--share 12% --worthwhile 5% --looks 50%,80%", "--looks 50%,80%: expected 2 to 10 rising shares"],
     ["--share 12% --worthwhile 5% --looks 80%,50%,1", "expected 2 to 10 rising shares"],

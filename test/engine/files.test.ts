@@ -3,6 +3,7 @@ import { tmpdir } from "node:os";
 import { dirname, join } from "node:path";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { enginePath, fingerprint, formatOf, logFiles } from "../../src/engine/files.ts";
+import { asAnybody } from "./small.ts";
 
 let folder = "";
 const NAMES = [
@@ -117,6 +118,13 @@ describe("what leads to no file", () => {
       ["log", 1, "files"],
     ]);
     expect(problems[0]?.message).toBe("data is a folder. Name the files in it, such as data/*.csv.");
+  });
+  it("is a place that may not be looked into, and is not told as missing", async () => {
+    const secret = join(folder, "secret");
+    mkdirSync(secret);
+    writeFileSync(join(secret, "a.csv"), "x\n");
+    const { problems } = await asAnybody(folder, secret, () => logFiles([{ files: ["secret/a.csv"] }], folder));
+    expect(problems[0]?.message).toBe("secret/a.csv may not be read by you. Ask for the right to read it.");
   });
   it("is an address too, since nothing is fetched", async () => {
     const { problems } = await logFiles([{ files: ["s3://bucket/a.csv"] }], folder);

@@ -1,6 +1,11 @@
+import { appendFileSync, mkdtempSync, rmSync, writeFileSync } from "node:fs";
+import { tmpdir } from "node:os";
+import { join } from "node:path";
 import { gzipSync } from "node:zlib";
 import { describe, expect, it } from "vitest";
-import { fares, reduced, zstandardOf } from "./small.ts";
+import { reduce } from "../../src/engine/index.ts";
+import { loadPlan, type Plan, type PlanSource } from "../../src/plan/index.ts";
+import { asAnybody, fares, reduced, zstandardOf } from "./small.ts";
 
 const HEADER = "visitor,at,event,arm,fare";
 const ROWS = "v1,2026-03-02,search,list,1.5\nv2,2026-03-02,search,calendar,2\n";
@@ -95,6 +100,41 @@ wrong,v2,x,2026-03-02,s,list,calendar,2,70,80
       "only.csv": "\nvisitor\nv1\n\nv2\n\n\nv3\n",
     });
     expect([found.arms, found.rows]).toEqual([ARMS, { "unit-not-enrolled": 1, "in-follow-up": 4 }]);
+  });
+});
+
+describe("a file that may not be read", () => {
+  it("says so, and is not told as broken", async () => {
+    const folder = mkdtempSync(join(tmpdir(), "closeout-secret-"));
+    try {
+      for (const name of ["log.csv", "log.ndjson", "log.parquet"]) {
+        writeFileSync(join(folder, name), `${HEADER}\n`);
+        const { plan, source } = loadPlan(fares({ files: name })) as { plan: Plan; source: PlanSource };
+        const run = () => asAnybody(folder, join(folder, name), () => reduce(plan, source, folder));
+        await expect(run(), name).rejects.toThrow(`${name} may not be read by you. Ask for the right to read it.`);
+      }
+    } finally {
+      rmSync(folder, { recursive: true, force: true });
+    }
+  });
+});
+
+describe("a file that is written to while it is read", () => {
+  it("stops the run: its rows and its fingerprint would be of two moments", async () => {
+    const folder = mkdtempSync(join(tmpdir(), "closeout-growing-"));
+    try {
+      const log = join(folder, "log.csv");
+      writeFileSync(log, `${HEADER}\nv1,2026-03-02,search,list,1\nv2,2026-03-02,search,calendar,1\n`);
+      const { plan, source } = loadPlan(fares()) as { plan: Plan; source: PlanSource };
+      const progress = ({ stage }: { stage: string }) => {
+        if (stage === "enrolling units") appendFileSync(log, "v3,2026-03-02,search,list,1\n");
+      };
+      await expect(reduce(plan, source, folder, { progress })).rejects.toThrow(
+        "log.csv was changed while it was read. Run this again when nothing writes to it.",
+      );
+    } finally {
+      rmSync(folder, { recursive: true, force: true });
+    }
   });
 });
 

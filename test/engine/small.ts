@@ -1,4 +1,4 @@
-import { mkdirSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from "node:fs";
+import { chmodSync, mkdirSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { dirname, join } from "node:path";
 import { DuckDBInstance } from "@duckdb/node-api";
@@ -110,5 +110,19 @@ export async function zstandardOf(text: string): Promise<Buffer> {
     return readFileSync(join(folder, "packed.csv.zst"));
   } finally {
     rmSync(folder, { recursive: true, force: true });
+  }
+}
+
+/** Does something where `path` may not be read: as somebody else, if these tests run as root, who may read anything. */
+export async function asAnybody<T>(folder: string, path: string, work: () => Promise<T>): Promise<T> {
+  const isRoot = process.geteuid?.() === 0;
+  chmodSync(folder, 0o755);
+  chmodSync(path, 0o000);
+  if (isRoot) process.seteuid?.(65534);
+  try {
+    return await work();
+  } finally {
+    if (isRoot) process.seteuid?.(0);
+    chmodSync(path, 0o755);
   }
 }

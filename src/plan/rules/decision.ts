@@ -5,26 +5,26 @@ import { type Loose, mapping } from "./loose.ts";
 /** The least that a confidence or a power can be meant to be. What lies below is most often the share that may go wrong. */
 const LEAST = 0.5;
 
-const MEANINGS: readonly (readonly [key: string, message: (percent: number) => string])[] = [
-  [
-    "confidence",
-    (percent) =>
-      `A confidence says how often an interval holds the truth, so it is at least 50%. Where ${percent}% may go wrong write ${100 - percent}%.`,
-  ],
-  [
-    "power",
-    (percent) =>
-      `Power says how often a test finds the effect, so it is at least 50%. Where ${percent}% may miss it write ${100 - percent}%.`,
-  ],
-];
+const MEANINGS = {
+  confidence: ["says how often an interval holds the truth", "may go wrong"],
+  power: ["says how often a test finds the effect", "may miss it"],
+} as const;
+
+/** What is wrong with a share under one half as a confidence or a power; null where nothing is. @param name how it is called */
+export function tooLow(key: keyof typeof MEANINGS, share: number, name: string): string | null {
+  if (share <= 0 || share >= LEAST) return null;
+  const percent = Number((share * 100).toPrecision(6));
+  const [meaning, harm] = MEANINGS[key];
+  return `${name} ${meaning}, so it is at least 50%. Where ${percent}% ${harm} write ${100 - percent}%.`;
+}
 
 /** A confidence of 5% would pass for a rule, and adopt nearly anything. */
 export function decisionRules(plan: Loose): readonly Problem[] {
   const decision = mapping(plan.decision) ?? {};
-  return MEANINGS.flatMap(([key, message]): readonly Problem[] => {
+  return (["confidence", "power"] as const).flatMap((key): readonly Problem[] => {
     const share = shareOf(decision[key]);
-    if (share === null || share <= 0 || share >= LEAST) return [];
-    return [{ path: ["decision", key], at: "value", message: message(Number((share * 100).toPrecision(6))) }];
+    const message = share === null ? null : tooLow(key, share, key === "power" ? "Power" : "A confidence");
+    return message === null ? [] : [{ path: ["decision", key], at: "value", message }];
   });
 }
 
