@@ -3,7 +3,7 @@ import { type Engine, nano, whole } from "./engine.ts";
 import { nanoText } from "./nano.ts";
 import { atRank, type Statement, totals } from "./sql/index.ts";
 
-/** Stage 8: caps, as exact decimal text. */
+/** Stage 9: caps, as exact decimal text. */
 
 export async function capValue(metric: Metric, x: Statement, engine: Engine): Promise<string | null> {
   if (metric.cap === null) return null;

@@ -5,9 +5,10 @@ import { endsOfArms } from "./ends.ts";
 import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
 import type { MeasuredMetric } from "./measuredMetric.ts";
+import type { CountedRows } from "./metricLedger.ts";
 import { scoreTables } from "./scores.ts";
 import { sizeTables } from "./sizes.ts";
-import { capped, countedRows, type Dialect, EACH_BUCKET, leftOut, name, type Statement, sql } from "./sql/index.ts";
+import { capped, type Dialect, EACH_BUCKET, leftOut, name, type Statement, sql } from "./sql/index.ts";
 import { type DecimalMeasure, decimalMeasures, groupedJointTables, groupedTables } from "./tables.ts";
 import type { CellTable, GroupCells, JointTable, MetricCells, MetricGroups } from "./types.ts";
 
@@ -21,7 +22,7 @@ export interface MetricValue {
   readonly covariate: Statement | null;
 }
 
-/** Stage 8: caps. */
+/** Stage 9: caps. */
 export async function metricValues(
   plan: Plan,
   layout: Layout,
@@ -45,13 +46,15 @@ export async function metricValues(
 }
 
 /**
- * Stages 9 and 10: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices.
+ * Stages 10 and 11: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices.
+ * @param counted the rows that each metric counts
  * @param groupings by which else than buckets the units are summed, over a row of `candidates`
  */
 export async function metricCells(
   plan: Plan,
   values: readonly MetricValue[],
   groupings: Groupings,
+  counted: readonly CountedRows[],
   engine: Engine,
   dialect: Dialect,
 ): Promise<{ readonly metrics: MetricCells[]; readonly groups: Omit<MetricGroups, "sinceEnrolment">[] }> {
@@ -108,7 +111,6 @@ export async function metricCells(
     engine,
     dialect,
   );
-  const [rows = {}] = await engine.query(countedRows(plan.metrics.length));
 
   const groups = plan.metrics.map((metric, m) => {
     const partner = partners.findIndex((one) => one.m === m);
@@ -127,8 +129,8 @@ export async function metricCells(
       metric: metric.name,
       leftOut: byVariant(plan, out, `none${m}`),
       notZero: byVariant(plan, out, `some${m}`),
-      countedRows: count(rows, `counted${m}`),
-      countedWithoutNumber: count(rows, `numberless${m}`),
+      countedRows: counted[m]?.rows ?? 0,
+      countedWithoutNumber: counted[m]?.withoutNumber ?? 0,
       cap: cap === null ? null : { value: cap, units: byVariant(plan, out, `over${m}`) },
       of: tableOf(tables, m),
       ratio: hasPartner && score !== undefined ? { per: x, score, joint } : null,

@@ -2,7 +2,7 @@ import type { Dialect } from "./dialect.ts";
 import { double, join, name, type Statement, sql } from "./sql.ts";
 
 /**
- * Stage 9 and 10: exact power sums per variant and bucket (DESIGN 5). u = (x - pivot) / scale, t_k = u^k 2^60,
+ * Stages 10 and 11: exact power sums per variant and bucket (DESIGN 5). u = (x - pivot) / scale, t_k = u^k 2^60,
  * high = floor(t), low = floor((t - high) 2^60 + 0.5): 64-bit terms, 128-bit sums, so no order, thread or engine changes one.
  */
 
