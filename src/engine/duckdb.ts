@@ -23,6 +23,8 @@ export async function openDuckdb(options: DuckdbOptions): Promise<Engine> {
   const connection = await instance.connect();
   // Else a time with a zone is written as the machine's zone has it.
   await connection.run("SET TimeZone = 'UTC'");
+  // Tables are sets of rows here: to keep them as the files have them costs a fifth of the reading, and memory.
+  await connection.run("SET preserve_insertion_order = false");
   const version = await readVersion(connection);
   return {
     name: "duckdb",
@@ -31,6 +33,14 @@ export async function openDuckdb(options: DuckdbOptions): Promise<Engine> {
       await connection.run(statement.text);
     },
     query: (statement) => query(connection, statement),
+    queryInFileOrder: async (statement) => {
+      await connection.run("SET preserve_insertion_order = true");
+      try {
+        return await query(connection, statement);
+      } finally {
+        await connection.run("SET preserve_insertion_order = false");
+      }
+    },
     interrupt: () => connection.interrupt(),
     close: () => {
       connection.closeSync();

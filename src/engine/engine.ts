@@ -10,6 +10,8 @@ export interface Engine {
   readonly version: string;
   run(statement: Statement): Promise<void>;
   query(statement: Statement): Promise<Row[]>;
+  /** The same of a statement that numbers records as their file has them; while it runs, no other may. */
+  queryInFileOrder(statement: Statement): Promise<Row[]>;
   /** Stops the statement that runs; it fails with an error. */
   interrupt(): void;
   close(): void;
