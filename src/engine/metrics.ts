@@ -1,10 +1,10 @@
 import type { Plan } from "../plan/index.ts";
-import { capValue } from "./caps.ts";
+import { capValues } from "./caps.ts";
 import { choiceCells } from "./choices.ts";
 import { endsOfArms } from "./ends.ts";
 import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
-import type { MeasuredMetric } from "./measuredMetric.ts";
+import { armsOfJoint, armsOfTable, type MeasuredMetric } from "./measuredMetric.ts";
 import type { CountedRows } from "./metricLedger.ts";
 import { scoreTables } from "./scores.ts";
 import { sizeTables } from "./sizes.ts";
@@ -29,20 +29,21 @@ export async function metricValues(
   engine: Engine,
   dialect: Dialect,
 ): Promise<MetricValue[]> {
-  return Promise.all(
-    plan.metrics.map(async (metric, m) => {
-      const at = (side: "of" | "per") => layout.parts.findIndex((part) => part.metric === m && part.side === side);
-      const plain = name(`x${at("of")}`);
-      const cap = await capValue(metric, plain, engine);
-      return {
-        plain,
-        cap,
-        value: capped(plain, cap, dialect),
-        per: metric.per === null ? null : name(`x${at("per")}`),
-        covariate: metric.adjustFor === null ? null : name(`z${m}`),
-      };
-    }),
-  );
+  const of = (m: number, side: "of" | "per") =>
+    name(`x${layout.parts.findIndex((part) => part.metric === m && part.side === side)}`);
+  const plains = plan.metrics.map((_, m) => of(m, "of"));
+  const caps = await capValues(plan.metrics, plains, engine);
+  return plan.metrics.map((metric, m) => {
+    const plain = of(m, "of");
+    const cap = caps[m] ?? null;
+    return {
+      plain,
+      cap,
+      value: capped(plain, cap, dialect),
+      per: metric.per === null ? null : of(m, "per"),
+      covariate: metric.adjustFor === null ? null : name(`z${m}`),
+    };
+  });
 }
 
 /**
@@ -66,28 +67,37 @@ export async function metricCells(
   const all = [...values.map(({ value }) => value), ...partners.map(({ x }) => x)];
   const measures = await decimalMeasures(all, sql`units`, engine, dialect);
   const over = { ...EACH_BUCKET, others: [...(groupings.day === null ? [] : [groupings.day]), ...groupings.levels] };
-  const grouped = await groupedTables(measures, engine, over);
+  const grouped = await groupedTables(
+    measures.map((measure) => ({ measure, over })),
+    engine,
+  );
   const tables = grouped.map((all) => tableOf(all, 0));
   const pairs = partners.map(({ m }, i) => ({
     y: measureOf(measures, m),
     x: measureOf(measures, values.length + i),
+    over,
     ofY: grouped[m] ?? [],
     ofX: grouped[values.length + i] ?? [],
   }));
-  const groupedJoints = await groupedJointTables(pairs, engine, over);
+  const groupedJoints = await groupedJointTables(pairs, engine, dialect);
   const joints = groupedJoints.map(([byBucket]) => byBucket);
   const ratios = values.flatMap(({ value, per }, m) => (per === null ? [] : [{ m, a: value, b: per }]));
   const scores = await scoreTables(plan, ratios, engine, dialect);
   const measured = plan.metrics.map((metric, m): MeasuredMetric => {
     const partner = partners.findIndex((one) => one.m === m);
     const [pair, joint] = [pairs[partner], joints[partner]];
+    const of = tableOf(tables, m);
     return {
       metric,
       plain: values[m]?.plain ?? sql`NULL`,
       cap: values[m]?.cap ?? null,
       y: measureOf(measures, m),
-      of: tableOf(tables, m),
-      paired: pair === undefined || joint === undefined ? null : { x: pair.x, of: tableOf(pair.ofX, 0), joint },
+      of,
+      arms: armsOfTable(of),
+      paired:
+        pair === undefined || joint === undefined
+          ? null
+          : { x: pair.x, of: tableOf(pair.ofX, 0), joint, arms: armsOfJoint(joint) },
     };
   });
   const choices = await choiceCells(plan, measured, engine, dialect);
