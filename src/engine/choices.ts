@@ -1,6 +1,6 @@
 import type { Plan } from "../plan/index.ts";
 import type { Engine } from "./engine.ts";
-import { loggedChoice } from "./logs.ts";
+import { loggedChoices } from "./logs.ts";
 import type { MeasuredMetric } from "./measuredMetric.ts";
 import { capChoices } from "./otherCaps.ts";
 import type { Dialect } from "./sql/index.ts";
@@ -20,11 +20,10 @@ export async function choiceCells(
 ): Promise<ChoiceCells[][]> {
   const summed = metrics.filter(({ metric }) => metric.summary !== "quantile");
   const ofUnits = await unitChoices(plan, summed, engine, dialect);
-  const found = new Map<MeasuredMetric, ChoiceCells[]>();
-  for (const [m, one] of summed.entries()) {
-    const caps = await capChoices(one, engine, dialect);
-    const log = await loggedChoice(one, engine, dialect);
-    found.set(one, [...caps, ...log, ...(ofUnits[m] ?? [])]);
-  }
-  return metrics.map((one) => found.get(one) ?? []);
+  const caps = await capChoices(summed, engine, dialect);
+  const logs = await loggedChoices(summed, engine, dialect);
+  return metrics.map((one) => {
+    const m = summed.indexOf(one);
+    return [...(caps[m] ?? []), ...(logs[m] ?? []), ...(ofUnits[m] ?? [])];
+  });
 }

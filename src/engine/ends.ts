@@ -3,7 +3,7 @@ import type { Engine, Value } from "./engine.ts";
 import type { MeasuredMetric } from "./measuredMetric.ts";
 import { nanoText } from "./nano.ts";
 import type { Score } from "./scores.ts";
-import { type Dialect, double, type EndOfArm, pairsAtEnds, sql } from "./sql/index.ts";
+import { type Dialect, double, pairsAtEnds, type Statement, sql } from "./sql/index.ts";
 import type { UnitEnds } from "./types.ts";
 
 type Scored = MeasuredMetric & { readonly score: Score | null };
@@ -17,49 +17,43 @@ export async function endsOfArms(
   engine: Engine,
   dialect: Dialect,
 ): Promise<(UnitEnds | null)[][]> {
-  const keyed = metrics.filter(({ paired }) => paired !== null);
-  const asked = keyed.flatMap((one, key) =>
-    plan.variants.flatMap((_, v) =>
-      SIDES.flatMap((side) => {
-        const end = endOfArm(one, key, v, side, dialect);
-        return end === null ? [] : [{ one, v, side, end }];
+  const asked = metrics.flatMap((one, m) => {
+    const { paired, score, y } = one;
+    if (paired === null) return [];
+    const ends = plan.variants.flatMap((_, variant) =>
+      SIDES.flatMap((side, end) => {
+        const at = endOfArm(one, variant, side, dialect);
+        return at === null ? [] : [{ variant, end, at }];
       }),
-    ),
-  );
-  const keys = keyed.map(({ score, y }) => score?.d ?? y.x);
-  const ends = asked.map(({ end }) => end);
-  const [row = {}] = asked.length === 0 ? [] : await engine.query(pairsAtEnds(keys, ends));
-  return metrics.map((one) =>
-    plan.variants.map((_, v) => {
-      const [smallest, largest] = SIDES.map((side) => {
-        const at = asked.findIndex((end) => end.one === one && end.v === v && end.side === side);
-        if (at >= 0) return pairOf(row[`y${at}`] ?? null, row[`x${at}`] ?? null);
+    );
+    return ends.length === 0 ? [] : [{ m, pair: { key: score?.d ?? y.x, y: y.x, x: paired.x.x, ends } }];
+  });
+  const rows = asked.length === 0 ? [] : await engine.query(pairsAtEnds(asked.map(({ pair }) => pair)));
+  const found = new Map(rows.map((row) => [`${row.part}/${row.variant}/${row.end_of}`, row]));
+  return metrics.map((one, m) => {
+    const part = asked.findIndex((pair) => pair.m === m);
+    return plan.variants.map((_, v) => {
+      const [smallest, largest] = SIDES.map((side, end) => {
+        const row = found.get(`${part}/${v}/${end}`);
+        if (row !== undefined) return pairOf(row.y ?? null, row.x ?? null);
         const value = extreme(one, v, side);
         return one.paired !== null || value === null ? null : { value, x: null };
       });
       return smallest == null || largest == null ? null : { smallest, largest };
-    }),
-  );
+    });
+  });
 }
 
 /** Null in an arm without units, or without scores. */
-function endOfArm(
-  one: Scored,
-  key: number,
-  variant: number,
-  side: (typeof SIDES)[number],
-  dialect: Dialect,
-): EndOfArm | null {
-  if (one.paired === null) return null;
-  const pair = { variant, key, y: one.y.x, x: one.paired.x.x };
+function endOfArm(one: Scored, variant: number, side: (typeof SIDES)[number], dialect: Dialect): Statement | null {
   if (one.score !== null) {
     const { table } = one.score;
     const scores = table[side].filter((_, i) => table.variant[i] === variant);
     if (scores.length === 0) return null;
-    return { ...pair, at: double(side === "smallest" ? Math.min(...scores) : Math.max(...scores)) };
+    return double(side === "smallest" ? Math.min(...scores) : Math.max(...scores));
   }
   const value = extreme(one, variant, side);
-  return value === null ? null : { ...pair, at: sql`CAST(${nanoText(value)} AS ${dialect.sumType})` };
+  return value === null ? null : sql`CAST(${nanoText(value)} AS ${dialect.sumType})`;
 }
 
 function extreme({ of }: MeasuredMetric, variant: number, side: (typeof SIDES)[number]): bigint | null {

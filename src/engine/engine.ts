@@ -10,9 +10,24 @@ export interface Engine {
   readonly version: string;
   run(statement: Statement): Promise<void>;
   query(statement: Statement): Promise<Row[]>;
+  /** The same rows by column, where they are many: an object a row would cost more than the statement. */
+  columns(statement: Statement): Promise<Columns>;
+  /** As query, of a statement that numbers records as their file has them; while it runs, no other may. */
+  queryInFileOrder(statement: Statement): Promise<Row[]>;
   /** Stops the statement that runs; it fails with an error. */
   interrupt(): void;
   close(): void;
+}
+
+/** What a statement gives, column by column, each as the type that its statement promises; none holds NULL. */
+export interface Columns {
+  readonly length: number;
+  wholes(column: string): bigint[];
+  /** Whole numbers that a double holds. */
+  counts(column: string): number[];
+  reals(column: string): number[];
+  /** Exact decimals, in 10^-9. */
+  nanos(column: string): bigint[];
 }
 
 /** Parsing at the border: a column of a row as the type that its statement promises. */

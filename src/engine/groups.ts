@@ -114,6 +114,27 @@ export function pairsOfGroups(
   };
 }
 
+/** Some rows of a table as one group, without a group for each; a single row stays in its bucket. */
+export function groupOfRows(
+  { variant, rows }: { readonly variant: number; readonly rows: readonly number[] },
+  { bucket, n }: Pick<CellTable, "bucket" | "n">,
+  sums: readonly (readonly [high: readonly bigint[], low: readonly bigint[]])[],
+  totals: readonly (readonly bigint[])[],
+  ends: readonly [smallest: readonly bigint[], largest: readonly bigint[]] | null,
+): Group {
+  const over = (column: readonly bigint[]) => rows.reduce((sum, row) => sum + at(column, row), 0n);
+  const end = (column: readonly bigint[], pick: (a: bigint, b: bigint) => bigint) =>
+    rows.reduce((found, row) => pick(found, at(column, row)), at(column, rows[0] ?? 0));
+  return {
+    variant,
+    bucket: rows.length === 1 ? at(bucket, rows[0] ?? 0) : 0,
+    n: rows.reduce((sum, row) => sum + at(n, row), 0),
+    sums: sums.map(([high, low]) => (over(high) << LOW_BITS) + over(low)),
+    totals: totals.map(over),
+    ends: ends === null ? null : [end(ends[0], lesser), end(ends[1], greater)],
+  };
+}
+
 /** Groups of one variant as one; null where there is none. */
 export function together(groups: readonly Group[]): Group | null {
   const [first, ...rest] = groups;

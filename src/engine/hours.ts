@@ -8,6 +8,8 @@ export interface HourCount {
   readonly rows: number;
 }
 export type ArmHour = HourCount & { readonly variant: number };
+/** Rows of enrolled units; the place of those that belong to analysed units and that no line of the row ledger took. */
+export type RowsOfUnits = ArmHour & { readonly place: number | null };
 
 export interface SilentRun {
   readonly source: number;

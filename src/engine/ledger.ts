@@ -1,16 +1,17 @@
 import type { Plan } from "../plan/index.ts";
 import { NO_UNIT } from "../words/index.ts";
 import { count, type Engine, type Row, text, wholeOrNull } from "./engine.ts";
+import type { RowsOfUnits } from "./hours.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import {
   analysedByDay,
-  analysedRows,
   copyCounts,
   enrolledByVariant,
   enrolmentRange,
   eventCounts,
   eventsThatOccur,
   otherVariantCounts,
+  PLACE,
   REASON,
   rowsByFate,
   rowsByFile,
@@ -26,10 +27,14 @@ import type { ByVariant, Facts, Reduction, ValueCount } from "./types.ts";
 type Ledger = Pick<Reduction, "rowsRead" | "rowLines" | "unitsSeen" | "unitLines" | "rejectReasons">;
 
 /** The account of all rows and units (DESIGN 7, flow), from counts of the stages; it must add up. */
-export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promise<Ledger> {
+export async function ledger(
+  plan: Plan,
+  layout: Layout,
+  rowsOfUnits: readonly RowsOfUnits[],
+  engine: Engine,
+): Promise<Ledger> {
   const fates = await engine.query(rowsByFate());
   const lines = await engine.query(unitsByLine());
-  const [analysed = {}] = await engine.query(analysedRows());
   const rowsOf = (fate: number) =>
     sumOf(
       fates.filter((row) => Number(row.fate) === fate),
@@ -42,14 +47,22 @@ export async function ledger(plan: Plan, layout: Layout, engine: Engine): Promis
       "rows",
     );
 
+  // Without time each row of an analysed unit is in follow-up.
+  const inPlace = (place: number) =>
+    layout.hasTime
+      ? rowsOfUnits.reduce((sum, group) => sum + (group.place === place ? group.rows : 0), 0)
+      : place === PLACE.inside
+        ? rowsOfLine("analysed")
+        : 0;
+
   const rowLines = [
     { id: "rejected", rows: rowsOf(FATE.rejected) },
     { id: "duplicate", rows: rowsOf(FATE.duplicate) },
     ...layout.rowFilters.map((filter, i) => ({ id: `filter:${filter.name}`, rows: rowsOf(FATE.firstFilter + i) })),
     ...ids.slice(0, -1).map((id) => ({ id: rowLineId(id), rows: rowsOfLine(id) })),
-    { id: "before-enrolment", rows: count(analysed, "before_rows") },
-    { id: "after-follow-up", rows: count(analysed, "after_rows") },
-    { id: "in-follow-up", rows: count(analysed, "inside_rows") },
+    { id: "before-enrolment", rows: inPlace(PLACE.before) },
+    { id: "after-follow-up", rows: inPlace(PLACE.after) },
+    { id: "in-follow-up", rows: inPlace(PLACE.inside) },
   ];
   const rowsRead = sumOf(fates, "rows");
   const accounted = rowLines.reduce((sum, line) => sum + line.rows, 0);

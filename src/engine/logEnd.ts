@@ -1,4 +1,4 @@
-/** A day's worth of one source's rows: how many, the first and the last. */
+/** Some of one source's rows, within less than 7 days: how many, the first and the last. */
 export interface TimeBin {
   readonly source: number;
   readonly rows: number;

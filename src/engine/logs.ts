@@ -1,22 +1,32 @@
 import type { Engine } from "./engine.ts";
 import type { Group } from "./groups.ts";
-import { armsOfCells, type MeasuredMetric, ownScales } from "./measuredMetric.ts";
+import type { MeasuredMetric } from "./measuredMetric.ts";
 import { nanoNumber } from "./nano.ts";
 import { scaleOver } from "./pivot.ts";
 import { type Dialect, doubleValue, sql, unlessZero } from "./sql/index.ts";
 import { doubleTables } from "./tables.ts";
 import type { ChoiceCells, ScoreTable } from "./types.ts";
 
-/** log(1 + x) of a mean none of whose values is under 0, arm by arm; else nothing. */
-export async function loggedChoice(one: MeasuredMetric, engine: Engine, dialect: Dialect): Promise<ChoiceCells[]> {
-  const arms = armsOfCells(one, ownScales(one));
-  const isFit = one.metric.summary === "mean" && arms.every(({ ends }) => ends !== null && ends[0] >= 0n);
-  if (!isFit || arms.length === 0) return [];
-  const most = Math.max(...arms.map(({ ends }) => nanoNumber(ends?.[1] ?? 0n)));
-  const scale = scaleOver(Math.log(1 + most));
-  const value = doubleValue(sql`ln(1 + (${dialect.toDouble(one.y.x)}))`, scale);
-  const [table] = await doubleTables([{ value, scale }], engine, unlessZero(one.y.x));
-  return table === undefined ? [] : [{ choice: "log", logged: withZeros(table, arms) }];
+/** log(1 + x) of each mean none of whose values is under 0, arm by arm; of others nothing. */
+export async function loggedChoices(
+  metrics: readonly MeasuredMetric[],
+  engine: Engine,
+  dialect: Dialect,
+): Promise<ChoiceCells[][]> {
+  const fit = metrics.filter(
+    ({ metric, arms }) =>
+      metric.summary === "mean" && arms.length > 0 && arms.every(({ ends }) => ends !== null && ends[0] >= 0n),
+  );
+  const asked = fit.map(({ arms, y }) => {
+    const most = Math.max(...arms.map(({ ends }) => nanoNumber(ends?.[1] ?? 0n)));
+    const scale = scaleOver(Math.log(1 + most));
+    return { value: doubleValue(sql`ln(1 + (${dialect.toDouble(y.x)}))`, scale), scale, over: unlessZero(y.x) };
+  });
+  const tables = await doubleTables(asked, engine);
+  return metrics.map((one) => {
+    const table = tables[fit.indexOf(one)];
+    return table === undefined ? [] : [{ choice: "log", logged: withZeros(table, one.arms) }];
+  });
 }
 
 /** A unit with 0 has the logarithm 0: it adds to n and to nothing else, so it was not asked for. */

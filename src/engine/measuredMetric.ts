@@ -1,13 +1,5 @@
 import type { Metric } from "../plan/index.ts";
-import {
-  CELL_DEGREES,
-  type Group,
-  groupsOfCells,
-  groupsOfPairs,
-  overScales,
-  PAIR_DEGREES,
-  together,
-} from "./groups.ts";
+import { CELL_DEGREES, type Group, groupOfRows, overScales, PAIR_DEGREES } from "./groups.ts";
 import { nanoOf } from "./nano.ts";
 import { powerOfTwoOver } from "./pivot.ts";
 import type { Statement } from "./sql/index.ts";
@@ -22,8 +14,15 @@ export interface MeasuredMetric {
   readonly cap: string | null;
   readonly y: DecimalMeasure;
   readonly of: CellTable;
+  /** The sums of each arm. */
+  readonly arms: readonly Group[];
   /** A ratio's denominator or a covariate. */
-  readonly paired: { readonly x: DecimalMeasure; readonly of: CellTable; readonly joint: JointTable } | null;
+  readonly paired: {
+    readonly x: DecimalMeasure;
+    readonly of: CellTable;
+    readonly joint: JointTable;
+    readonly arms: readonly Group[];
+  } | null;
 }
 
 /** Larger scales than the plan's own, where other choices hold larger values. */
@@ -43,20 +42,59 @@ export function widened(scale: number, pivot: string, ends: readonly [bigint, bi
 }
 
 /** The plan's own sums, arm by arm, over other scales. */
-export function armsOfCells({ y, of }: MeasuredMetric, scales: Scales): Group[] {
-  return byArm(groupsOfCells(of)).map((group) => overScales(group, CELL_DEGREES, [bitsOver(y.scale, scales.y)]));
+export function armsOfCells({ y, arms }: MeasuredMetric, scales: Scales): Group[] {
+  return arms.map((group) => overScales(group, CELL_DEGREES, [bitsOver(y.scale, scales.y)]));
 }
 
 export function armsOfPairs(one: MeasuredMetric, scales: Scales): Group[] {
   if (one.paired === null) return [];
   const bits = [bitsOver(one.y.scale, scales.y), bitsOver(one.paired.x.scale, scales.x)];
-  return byArm(groupsOfPairs(one.paired.joint)).map((group) => overScales(group, PAIR_DEGREES, bits));
+  return one.paired.arms.map((group) => overScales(group, PAIR_DEGREES, bits));
 }
 
 /** log2 of how many times a power of two another is. */
 const bitsOver = (from: number, to: number): number => Math.round(Math.log2(to / from));
 
-function byArm(groups: readonly Group[]): Group[] {
-  const variants = [...new Set(groups.map(({ variant }) => variant))].sort((a, b) => a - b);
-  return variants.flatMap((variant) => together(groups.filter((group) => group.variant === variant)) ?? []);
+/** The sums of each arm, over its buckets. */
+export const armsOfTable = (table: CellTable): Group[] =>
+  rowsByArm(table).map((arm) =>
+    groupOfRows(
+      arm,
+      table,
+      [
+        [table.high1, table.low1],
+        [table.high2, table.low2],
+        [table.high3, table.low3],
+        [table.high4, table.low4],
+      ],
+      [table.total],
+      [table.smallest, table.largest],
+    ),
+  );
+
+export const armsOfJoint = (table: JointTable): Group[] =>
+  rowsByArm(table).map((arm) =>
+    groupOfRows(
+      arm,
+      table,
+      [
+        [table.high10, table.low10],
+        [table.high01, table.low01],
+        [table.high20, table.low20],
+        [table.high11, table.low11],
+        [table.high02, table.low02],
+      ],
+      [table.totalY, table.totalX],
+      null,
+    ),
+  );
+
+function rowsByArm({ variant }: CellTable | JointTable): { readonly variant: number; readonly rows: number[] }[] {
+  const arms = new Map<number, number[]>();
+  for (const [row, arm] of variant.entries()) {
+    const rows = arms.get(arm);
+    if (rows === undefined) arms.set(arm, [row]);
+    else rows.push(row);
+  }
+  return [...arms].sort(([a], [b]) => a - b).map(([arm, rows]) => ({ variant: arm, rows }));
 }

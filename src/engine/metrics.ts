@@ -1,13 +1,14 @@
 import type { Plan } from "../plan/index.ts";
-import { capValue } from "./caps.ts";
+import { capValues } from "./caps.ts";
 import { choiceCells } from "./choices.ts";
 import { endsOfArms } from "./ends.ts";
 import { count, type Engine, type Row } from "./engine.ts";
 import type { Layout } from "./layout.ts";
-import type { MeasuredMetric } from "./measuredMetric.ts";
+import { armsOfJoint, armsOfTable, type MeasuredMetric } from "./measuredMetric.ts";
+import type { CountedRows } from "./metricLedger.ts";
 import { scoreTables } from "./scores.ts";
 import { sizeTables } from "./sizes.ts";
-import { capped, countedRows, type Dialect, EACH_BUCKET, leftOut, name, type Statement, sql } from "./sql/index.ts";
+import { capped, type Dialect, EACH_BUCKET, leftOut, name, type Statement, sql } from "./sql/index.ts";
 import { type DecimalMeasure, decimalMeasures, groupedJointTables, groupedTables } from "./tables.ts";
 import type { CellTable, GroupCells, JointTable, MetricCells, MetricGroups } from "./types.ts";
 
@@ -21,37 +22,40 @@ export interface MetricValue {
   readonly covariate: Statement | null;
 }
 
-/** Stage 8: caps. */
+/** Stage 9: caps. */
 export async function metricValues(
   plan: Plan,
   layout: Layout,
   engine: Engine,
   dialect: Dialect,
 ): Promise<MetricValue[]> {
-  return Promise.all(
-    plan.metrics.map(async (metric, m) => {
-      const at = (side: "of" | "per") => layout.parts.findIndex((part) => part.metric === m && part.side === side);
-      const plain = name(`x${at("of")}`);
-      const cap = await capValue(metric, plain, engine);
-      return {
-        plain,
-        cap,
-        value: capped(plain, cap, dialect),
-        per: metric.per === null ? null : name(`x${at("per")}`),
-        covariate: metric.adjustFor === null ? null : name(`z${m}`),
-      };
-    }),
-  );
+  const of = (m: number, side: "of" | "per") =>
+    name(`x${layout.parts.findIndex((part) => part.metric === m && part.side === side)}`);
+  const plains = plan.metrics.map((_, m) => of(m, "of"));
+  const caps = await capValues(plan.metrics, plains, engine);
+  return plan.metrics.map((metric, m) => {
+    const plain = of(m, "of");
+    const cap = caps[m] ?? null;
+    return {
+      plain,
+      cap,
+      value: capped(plain, cap, dialect),
+      per: metric.per === null ? null : of(m, "per"),
+      covariate: metric.adjustFor === null ? null : name(`z${m}`),
+    };
+  });
 }
 
 /**
- * Stages 9 and 10: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices.
+ * Stages 10 and 11: pivots, scales and cells; then the ratios' scores and theirs, and the same under other choices.
+ * @param counted the rows that each metric counts
  * @param groupings by which else than buckets the units are summed, over a row of `candidates`
  */
 export async function metricCells(
   plan: Plan,
   values: readonly MetricValue[],
   groupings: Groupings,
+  counted: readonly CountedRows[],
   engine: Engine,
   dialect: Dialect,
 ): Promise<{ readonly metrics: MetricCells[]; readonly groups: Omit<MetricGroups, "sinceEnrolment">[] }> {
@@ -63,28 +67,37 @@ export async function metricCells(
   const all = [...values.map(({ value }) => value), ...partners.map(({ x }) => x)];
   const measures = await decimalMeasures(all, sql`units`, engine, dialect);
   const over = { ...EACH_BUCKET, others: [...(groupings.day === null ? [] : [groupings.day]), ...groupings.levels] };
-  const grouped = await groupedTables(measures, engine, over);
+  const grouped = await groupedTables(
+    measures.map((measure) => ({ measure, over })),
+    engine,
+  );
   const tables = grouped.map((all) => tableOf(all, 0));
   const pairs = partners.map(({ m }, i) => ({
     y: measureOf(measures, m),
     x: measureOf(measures, values.length + i),
+    over,
     ofY: grouped[m] ?? [],
     ofX: grouped[values.length + i] ?? [],
   }));
-  const groupedJoints = await groupedJointTables(pairs, engine, over);
+  const groupedJoints = await groupedJointTables(pairs, engine, dialect);
   const joints = groupedJoints.map(([byBucket]) => byBucket);
   const ratios = values.flatMap(({ value, per }, m) => (per === null ? [] : [{ m, a: value, b: per }]));
   const scores = await scoreTables(plan, ratios, engine, dialect);
   const measured = plan.metrics.map((metric, m): MeasuredMetric => {
     const partner = partners.findIndex((one) => one.m === m);
     const [pair, joint] = [pairs[partner], joints[partner]];
+    const of = tableOf(tables, m);
     return {
       metric,
       plain: values[m]?.plain ?? sql`NULL`,
       cap: values[m]?.cap ?? null,
       y: measureOf(measures, m),
-      of: tableOf(tables, m),
-      paired: pair === undefined || joint === undefined ? null : { x: pair.x, of: tableOf(pair.ofX, 0), joint },
+      of,
+      arms: armsOfTable(of),
+      paired:
+        pair === undefined || joint === undefined
+          ? null
+          : { x: pair.x, of: tableOf(pair.ofX, 0), joint, arms: armsOfJoint(joint) },
     };
   });
   const choices = await choiceCells(plan, measured, engine, dialect);
@@ -108,7 +121,6 @@ export async function metricCells(
     engine,
     dialect,
   );
-  const [rows = {}] = await engine.query(countedRows(plan.metrics.length));
 
   const groups = plan.metrics.map((metric, m) => {
     const partner = partners.findIndex((one) => one.m === m);
@@ -127,8 +139,8 @@ export async function metricCells(
       metric: metric.name,
       leftOut: byVariant(plan, out, `none${m}`),
       notZero: byVariant(plan, out, `some${m}`),
-      countedRows: count(rows, `counted${m}`),
-      countedWithoutNumber: count(rows, `numberless${m}`),
+      countedRows: counted[m]?.rows ?? 0,
+      countedWithoutNumber: counted[m]?.withoutNumber ?? 0,
       cap: cap === null ? null : { value: cap, units: byVariant(plan, out, `over${m}`) },
       of: tableOf(tables, m),
       ratio: hasPartner && score !== undefined ? { per: x, score, joint } : null,

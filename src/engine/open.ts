@@ -116,7 +116,8 @@ const SAMPLE_LINES = 2_000;
 
 /** The keys of the first lines; of all lines when one that the plan names is not among those. Sorted: lines have no common order. */
 async function jsonHeader(path: string, wanted: ReadonlySet<string>, engine: Engine): Promise<string[]> {
-  const keys = async (limit: number) => (await engine.query(jsonKeys([path], limit))).map((row) => text(row, "key"));
+  const keys = async (limit: number) =>
+    (await engine.queryInFileOrder(jsonKeys([path], limit))).map((row) => text(row, "key"));
   const sampled = await keys(SAMPLE_LINES);
   const isWhole = [...wanted].every((column) => sampled.includes(column));
   return (isWhole ? sampled : await keys(0)).sort();

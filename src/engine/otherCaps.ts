@@ -1,5 +1,5 @@
 import { rankOf } from "./caps.ts";
-import { type Engine, nano } from "./engine.ts";
+import { count, type Engine, nano } from "./engine.ts";
 import {
   alike,
   alikeInY,
@@ -14,7 +14,7 @@ import {
 import { armsOfCells, armsOfPairs, type MeasuredMetric, ownScales, type Scales, widened } from "./measuredMetric.ts";
 import { nanoOf, nanoText } from "./nano.ts";
 import type { PowerClass } from "./pivot.ts";
-import { aboveCaps, type Dialect, extremes, valueFromTop } from "./sql/index.ts";
+import { aboveCaps, type Dialect, extremes, valuesFromTop } from "./sql/index.ts";
 import { decimalTables, jointTables, measured } from "./tables.ts";
 import type { ChoiceCells, OtherCells } from "./types.ts";
 
@@ -29,53 +29,78 @@ interface OtherCap {
   readonly cap: bigint | null;
 }
 
+/** A metric of which other caps are asked, its own in 10^-9, and its largest value before that. */
+interface Capped {
+  readonly one: MeasuredMetric;
+  readonly own: bigint | null;
+  readonly largest: bigint;
+}
+
 /**
- * A metric under other caps: none, and the two usual quantiles. Asked for are the sums of the units only that lie above
- * one of the caps; the others are the same under each.
+ * Metrics under other caps, one list a metric: none, and the two usual quantiles. Asked for are the sums of the units only
+ * that lie above one of the caps; the others are the same under each. Each question is asked of all metrics at once.
  */
-export async function capChoices(one: MeasuredMetric, engine: Engine, dialect: Dialect): Promise<ChoiceCells[]> {
-  const { summary } = one.metric;
-  const most = one.of.largest.reduce<bigint | null>((max, end) => (max === null || end > max ? end : max), null);
-  if (most === null || (summary !== "mean" && summary !== "ratio-of-totals")) return [];
-  const own = one.cap === null ? null : nanoOf(one.cap);
-  const largest = own === null ? most : await largestBeforeCap(one, engine);
-  const caps = await otherCaps(one, own, largest, engine, dialect);
-  if (caps.length === 0) return [];
-  const ladder = [...new Set([own, ...caps.map(({ cap }) => cap)].filter((cap) => cap !== null))].sort(ascending);
-  const above = await sumsAbove(one, ladder, largest, engine, dialect);
-  return caps.map(({ choice, cap }) => under(one, above, ladder, own, choice, cap));
+export async function capChoices(
+  metrics: readonly MeasuredMetric[],
+  engine: Engine,
+  dialect: Dialect,
+): Promise<ChoiceCells[][]> {
+  const summed = await withLargest(metrics, engine);
+  const caps = await otherCaps(summed, engine, dialect);
+  const asked = summed.flatMap((capped, i) => {
+    const own = caps[i] ?? [];
+    if (own.length === 0) return [];
+    const limits = [capped.own, ...own.map(({ cap }) => cap)].filter((cap) => cap !== null);
+    return [{ ...capped, caps: own, ladder: [...new Set(limits)].sort(ascending) }];
+  });
+  const above = await sumsAbove(asked, engine, dialect);
+  return metrics.map((metric) => {
+    const i = asked.findIndex(({ one }) => one === metric);
+    const [found, sums] = [asked[i], above[i]];
+    if (found === undefined || sums === undefined) return [];
+    return found.caps.map(({ choice, cap }) => under(metric, sums, found.ladder, found.own, choice, cap));
+  });
+}
+
+/** The means and ratios with some value. */
+async function withLargest(metrics: readonly MeasuredMetric[], engine: Engine): Promise<Capped[]> {
+  const summed = metrics.flatMap((one) => {
+    const { summary } = one.metric;
+    const most = one.of.largest.reduce<bigint | null>((max, end) => (max === null || end > max ? end : max), null);
+    if (most === null || (summary !== "mean" && summary !== "ratio-of-totals")) return [];
+    return [{ one, own: one.cap === null ? null : nanoOf(one.cap), largest: most }];
+  });
+  const held = summed.filter(({ own }) => own !== null);
+  if (held.length === 0) return summed;
+  const [ends = {}] = await engine.query(extremes(held.map(({ one }) => one.plain)));
+  return summed.map((capped) => {
+    const i = held.indexOf(capped);
+    return i < 0 ? capped : { ...capped, largest: nano(ends, `most${i}`) };
+  });
 }
 
 /** Those that change a value which the plan's own cap leaves, or leave one that it changes; of two alike the first. */
-async function otherCaps(
-  one: MeasuredMetric,
-  own: bigint | null,
-  largest: bigint,
-  engine: Engine,
-  dialect: Dialect,
-): Promise<OtherCap[]> {
-  const n = one.y.classes.reduce((sum, group) => sum + group.n, 0n);
-  const found: OtherCap[] = [{ choice: "no-cap", cap: null }];
-  for (const [choice, q] of OTHER_QUANTILES) {
-    const cap = await fromTheTop(one, n - rankOf(q, n), engine, dialect);
-    // Where so few units have more than 0 nothing would be left to compare.
-    if (cap !== null) found.push({ choice, cap });
-  }
-  const effect = (cap: bigint | null) => (cap === null || cap >= largest ? null : cap);
-  const effects = [effect(own), ...found.map(({ cap }) => effect(cap))];
-  return found.filter((_, i) => effects.indexOf(effects[i + 1] ?? null) === i + 1);
-}
-
-/** The value that `above` others exceed or equal; null where it is not above 0. */
-async function fromTheTop(
-  { plain, y }: MeasuredMetric,
-  above: bigint,
-  engine: Engine,
-  dialect: Dialect,
-): Promise<bigint | null> {
-  const [row] = await engine.query(valueFromTop(plain, nanoText(lowestNeeded(y.classes, above)), above, dialect));
-  const found = row === undefined ? 0n : nano(row, "x");
-  return found > 0n ? found : null;
+async function otherCaps(summed: readonly Capped[], engine: Engine, dialect: Dialect): Promise<OtherCap[][]> {
+  const asked = summed.flatMap(({ one }, i) => {
+    const n = one.y.classes.reduce((sum, group) => sum + group.n, 0n);
+    return OTHER_QUANTILES.map(([choice, q]) => {
+      const above = n - rankOf(q, n);
+      return { i, choice, x: one.plain, above, bound: nanoText(lowestNeeded(one.y.classes, above)) };
+    });
+  });
+  const rows = asked.length === 0 ? [] : await engine.query(valuesFromTop(asked, dialect));
+  const values = new Map(rows.map((row) => [count(row, "place"), nano(row, "x")]));
+  return summed.map(({ own, largest }, i) => {
+    const found: OtherCap[] = [{ choice: "no-cap", cap: null }];
+    for (const [place, one] of asked.entries()) {
+      const cap = values.get(place) ?? 0n;
+      // Where so few units have more than 0 nothing would be left to compare.
+      if (one.i === i && cap > 0n) found.push({ choice: one.choice, cap });
+    }
+    const effect = (cap: bigint | null) => (cap === null || cap >= largest ? null : cap);
+    const effects = [effect(own), ...found.map(({ cap }) => effect(cap))];
+    return found.filter((_, c) => effects.indexOf(effects[c + 1] ?? null) === c + 1);
+  });
 }
 
 /** A value from which on upwards there are more than `above` units: few are sorted then. The cap moves none below it. */
@@ -91,11 +116,6 @@ function lowestNeeded(classes: readonly PowerClass[], above: bigint): bigint {
   return 0n;
 }
 
-async function largestBeforeCap({ plain }: MeasuredMetric, engine: Engine): Promise<bigint> {
-  const [ends = {}] = await engine.query(extremes([plain]));
-  return nano(ends, "most0");
-}
-
 /** Sums of the units above the lowest cap; the bucket is how many of the caps a unit lies above. */
 interface SumsAbove {
   readonly scales: Scales;
@@ -104,21 +124,28 @@ interface SumsAbove {
 }
 
 async function sumsAbove(
-  one: MeasuredMetric,
-  ladder: readonly bigint[],
-  largest: bigint,
+  asked: readonly (Capped & { readonly ladder: readonly bigint[] })[],
   engine: Engine,
   dialect: Dialect,
-): Promise<SumsAbove> {
-  const { plain, y, paired } = one;
-  const scales = { ...ownScales(one), y: widened(y.scale, y.pivot, [largest, largest]) };
-  const over = aboveCaps(plain, ladder.map(nanoText), dialect);
-  const measuredY = measured(plain, y.pivot, scales.y, [], dialect);
-  const [ofY, ofX] = await decimalTables(paired === null ? [measuredY] : [measuredY, paired.x], engine, over);
-  if (ofY === undefined) throw new Error("no sums above a cap");
-  if (paired === null || ofX === undefined) return { scales, values: groupsOfCells(ofY), pairs: [] };
-  const [joint] = await jointTables([{ y: measuredY, x: paired.x, ofY, ofX }], engine, over);
-  return { scales, values: groupsOfCells(ofY), pairs: joint === undefined ? [] : groupsOfPairs(joint) };
+): Promise<SumsAbove[]> {
+  const all = asked.map(({ one, ladder, largest }) => {
+    const { plain, y } = one;
+    const scales = { ...ownScales(one), y: widened(y.scale, y.pivot, [largest, largest]) };
+    const over = aboveCaps(plain, ladder.map(nanoText), dialect);
+    return { over, scales, y: measured(plain, y.pivot, scales.y, [], dialect), x: one.paired?.x ?? null };
+  });
+  const partners = all.flatMap(({ over, x }, i) => (x === null ? [] : [{ i, over, measure: x }]));
+  const tables = await decimalTables([...all.map(({ y, over }) => ({ measure: y, over })), ...partners], engine);
+  const pairs = partners.flatMap(({ i, over, measure: x }, p) => {
+    const [y, ofY, ofX] = [all[i]?.y, tables[i], tables[all.length + p]];
+    return y === undefined || ofY === undefined || ofX === undefined ? [] : [{ y, x, over, ofY, ofX }];
+  });
+  const joints = await jointTables(pairs, engine, dialect);
+  return all.map(({ scales }, i) => {
+    const [of, joint] = [tables[i], joints[partners.findIndex((partner) => partner.i === i)]];
+    if (of === undefined) throw new Error(`no sums above the caps of metric ${i}`);
+    return { scales, values: groupsOfCells(of), pairs: joint === undefined ? [] : groupsOfPairs(joint) };
+  });
 }
 
 /** The metric's cells as if its cap were another. */

@@ -3,18 +3,19 @@ import os from "node:os";
 import path from "node:path";
 import { logProblems, noSuchList, type Plan, type PlanSource, type Problem } from "../plan/index.ts";
 import { openDuckdb } from "./duckdb.ts";
-import { count, type Engine, whole, wholeOrNull } from "./engine.ts";
+import { type Engine, wholeOrNull } from "./engine.ts";
 import { isFile, neighbours } from "./files.ts";
 import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
 import { facts, ledger, rowsPerFile } from "./ledger.ts";
 import { levels } from "./levels.ts";
 import { readLists } from "./lists.ts";
-import { logEnd, type SourceSpan, spansOf } from "./logEnd.ts";
-import { metricLedgers } from "./metricLedger.ts";
+import { logEnd } from "./logEnd.ts";
+import { metricLedgers, refuseOtherCounts } from "./metricLedger.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
 import { type OpenLog, openLog } from "./open.ts";
 import { inputFingerprints, readRows, refuseChanged, refuseWithoutRows } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
+import { hoursOfLog, hoursOfUnits } from "./rowsByHour.ts";
 import { openSession, type Session } from "./session.ts";
 import { sinceEnrolment } from "./sinceEnrolment.ts";
 import { soundness } from "./soundness.ts";
@@ -28,14 +29,14 @@ import {
   enrolmentRange,
   enrolments,
   markDuplicates,
+  matched,
   name,
   needsEnrollingRow,
   seen,
-  timeBins,
   timeRange,
   units,
 } from "./sql/index.ts";
-import type { MetricCells, MetricLedger, Reduction } from "./types.ts";
+import type { Reduction } from "./types.ts";
 import { type DayRun, dayAt, dayRuns, offsetsByLocalTime, type Step } from "./zone.ts";
 
 export interface ReduceOptions {
@@ -148,13 +149,32 @@ export async function enrolUnits(
   const [range = {}] = await engine.query(timeRange());
   const firstUs = wholeOrNull(range, "first_us");
   const lastUs = wholeOrNull(range, "last_us");
-  const spans = layout.hasTime ? await spansOfLog(layout, engine) : [];
+  const span = {
+    firstUs: wholeOrNull(range, "first_of_all_us") ?? 0n,
+    lastUs: wholeOrNull(range, "last_of_all_us") ?? 0n,
+  };
+  const { spans, hours } = layout.hasTime ? await hoursOfLog(layout, span, engine) : { spans: [], hours: [] };
   const logEndUs = logEnd(spans);
   const key = enrolmentKey(plan, firstUs, lastUs);
   await engine.run(seen(plan, layout, key));
   if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
   await engine.run(enrolments(plan, layout, key, logEndUs));
-  return { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, spans, key, logEndUs, stage };
+  return {
+    layout,
+    zone,
+    groups,
+    lists,
+    perFile,
+    fingerprints,
+    firstUs,
+    lastUs,
+    span,
+    spans,
+    hours,
+    key,
+    logEndUs,
+    stage,
+  };
 }
 
 async function stages(
@@ -166,27 +186,44 @@ async function stages(
 ): Promise<{ reduction: Reduction; values: MetricValue[] }> {
   const { log, engine } = opened;
   const enrolled = await enrolUnits(plan, folder, opened, dialect, options);
-  const { layout, zone, groups, lists, perFile, fingerprints, firstUs, lastUs, spans, key, logEndUs, stage } = enrolled;
+  const {
+    layout,
+    zone,
+    groups,
+    lists,
+    perFile,
+    fingerprints,
+    firstUs,
+    lastUs,
+    span,
+    spans,
+    hours,
+    key,
+    logEndUs,
+    stage,
+  } = enrolled;
   stage("adding up each unit", 0.75);
   const subgroups = await levels(plan, layout, engine, dialect);
   const levelCodes = subgroups.map(({ code }) => code);
   const days = dayRuns(plan.timezone, firstUs ?? 0n, lastUs ?? 0n);
   const firstDay = await firstEnrolmentDay(plan, layout, days, engine);
+  await engine.run(matched(plan, layout));
   await engine.run(candidates(plan, layout, days, firstDay, levelCodes, logEndUs, dialect));
   await engine.run(units());
   stage("adding up cells", 0.9);
   const values = await metricValues(plan, layout, engine, dialect);
   const groupings = { day: layout.hasTime ? name("day") : null, levels: subgroups.map((_, s) => name(`k${s}`)) };
-  const { metrics, groups: grouped } = await metricCells(plan, values, groupings, engine, dialect);
+  const { ledgers, counted } = await metricLedgers(plan, layout, engine);
+  const { metrics, groups: grouped } = await metricCells(plan, values, groupings, counted, engine, dialect);
   const since = await sinceEnrolment(plan, layout, values, logEndUs, engine, dialect);
-  const account = await ledger(plan, layout, engine);
-  const ledgers = await metricLedgers(plan, layout, engine);
-  refuseOtherCounts(plan, metrics, ledgers);
+  const ofUnits = layout.hasTime ? await hoursOfUnits(plan, layout, span, engine) : [];
+  const account = await ledger(plan, layout, ofUnits, engine);
+  await refuseOtherCounts(plan, layout, ledgers, engine);
   const found = await facts(plan, layout, engine, logEndUs);
   const bySubgroup = subgroups.map((subgroup) => subgroup.found);
   const sound = await soundness(
     plan,
-    { layout, key, days, levels: levelCodes, spans, logEndUs, account },
+    { layout, key, days, levels: levelCodes, spans, hours, rowsOfUnits: ofUnits, span, logEndUs, account },
     found.enrolled,
     engine,
   );
@@ -219,16 +256,6 @@ async function stages(
   return { reduction, values };
 }
 
-/** What a metric's ledger counts must be what its cells count; a ratio's cells count the rows of both parts. */
-function refuseOtherCounts(plan: Plan, metrics: readonly MetricCells[], ledgers: readonly MetricLedger[]): void {
-  for (const [m, { name, per }] of plan.metrics.entries()) {
-    const [inLedger, inCells] = [ledgers[m]?.lines.at(-1)?.rows, metrics[m]?.countedRows];
-    if (per === null && inLedger !== inCells) {
-      throw new Error(`${name}: its ledger ends with ${inLedger} rows but ${inCells} were counted`);
-    }
-  }
-}
-
 /** The local day on which the first analysed unit was enrolled. */
 async function firstEnrolmentDay(
   plan: Plan,
@@ -240,19 +267,6 @@ async function firstEnrolmentDay(
   const [range = {}] = await engine.query(enrolmentRange(unitLineIds(plan).length - 1));
   const firstUs = wholeOrNull(range, "first_us");
   return firstUs === null ? null : dayAt(firstUs, days);
-}
-
-async function spansOfLog(layout: Layout, engine: Engine): Promise<SourceSpan[]> {
-  const bins = await engine.query(timeBins(layout));
-  return spansOf(
-    bins.map((row) => ({
-      source: count(row, "source"),
-      rows: count(row, "rows"),
-      firstUs: whole(row, "first_us"),
-      lastUs: whole(row, "last_us"),
-      counted: row.counted === true,
-    })),
-  );
 }
 
 async function missingLists(source: PlanSource, folder: string): Promise<Problem[]> {

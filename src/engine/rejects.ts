@@ -71,7 +71,7 @@ async function rejectedOf(
   engine: Engine,
   dialect: Dialect,
 ): Promise<Rejected[] | null> {
-  const judged = await engine.query(rejectedOrdinals(log.plan, log.layout, group, log.zone, dialect));
+  const judged = await engine.queryInFileOrder(rejectedOrdinals(log.plan, log.layout, group, log.zone, dialect));
   if (group.format !== "parquet") {
     await engine.run(sql`DROP TABLE reject_errors`);
     await engine.run(sql`DROP TABLE reject_scans`);

@@ -63,9 +63,8 @@ export async function unpivoted(
       : scaleOver(Math.max(Math.abs(real(ends, `least${i}`)), Math.abs(real(ends, `most${i}`)))),
   );
   return doubleTables(
-    values.map((x, i) => ({ value: doubleValue(x, scales[i] ?? 1), scale: scales[i] ?? 1 })),
+    values.map((x, i) => ({ value: doubleValue(x, scales[i] ?? 1), scale: scales[i] ?? 1, over })),
     engine,
-    over,
   );
 }
 

@@ -55,14 +55,25 @@ export async function sinceEnrolment(
   const followed = await engine.query(followedUnits(daily.map(({ metric }) => values[metric]?.value ?? sql`NULL`)));
   const columns = parts.map(({ part }) => name(`d${part}`));
   const measures = await aboutZero(columns, sql`by_day`, engine, dialect);
-  const tables = await decimalTables(measures, engine, EACH_DAY);
+  const tables = await decimalTables(
+    measures.map((measure) => ({ measure, over: EACH_DAY })),
+    engine,
+  );
   const at = (part: number) => parts.findIndex((one) => one.part === part);
   const pairs = daily.flatMap(({ of, per }) =>
     per === null
       ? []
-      : [{ y: one(measures, at(of)), x: one(measures, at(per)), ofY: one(tables, at(of)), ofX: one(tables, at(per)) }],
+      : [
+          {
+            y: one(measures, at(of)),
+            x: one(measures, at(per)),
+            over: EACH_DAY,
+            ofY: one(tables, at(of)),
+            ofX: one(tables, at(per)),
+          },
+        ],
   );
-  const joints = await jointTables(pairs, engine, EACH_DAY);
+  const joints = await jointTables(pairs, engine, dialect);
   const plain = daily.filter(({ per }) => per === null).map(({ of }) => at(of));
   const slopeTables = await slopesOf(
     plain.map((i) => one(measures, i)),
@@ -155,7 +166,11 @@ async function slopesOf(
   // The weights add up to less than days^2, so this scale reaches every sum of theirs.
   const reach = powerOfTwoOver(BigInt(days * days) * 1_000_000_000n);
   const ofSlopes = measures.map(({ scale }, i) => measured(name(`s${i}`), "0", scale * reach, [], dialect));
-  return decimalTables(ofSlopes, engine, { bucket: sql`0`, units: sql`TRUE`, from });
+  const over: Over = { bucket: sql`0`, units: sql`TRUE`, from };
+  return decimalTables(
+    ofSlopes.map((measure) => ({ measure, over })),
+    engine,
+  );
 }
 
 /** What adds up over days: rows and sums, and whether there was a row. */

@@ -1,7 +1,7 @@
 import type { Plan } from "../plan/index.ts";
 import { count, type Engine, type Row, textOrNull } from "./engine.ts";
 import { valuesOfFilters } from "./filterValues.ts";
-import { type ArmHour, byRows, type HourCount, hoursOfSpan, silentRuns } from "./hours.ts";
+import { type ArmHour, byRows, type HourCount, hoursOfSpan, type RowsOfUnits, silentRuns } from "./hours.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import type { SourceSpan } from "./logEnd.ts";
 import type {
@@ -20,10 +20,9 @@ import {
   enrollingUnits,
   fatesOfEnrolling,
   localDay,
-  rowsByHour,
-  rowsByHourAndVariant,
   type Statement,
   sql,
+  type TimeSpan,
   unfollowed,
   unitsInRuns,
 } from "./sql/index.ts";
@@ -37,6 +36,10 @@ interface Stages {
   /** A unit's level of each subgroup column, over enrolments. */
   readonly levels: readonly Statement[];
   readonly spans: readonly SourceSpan[];
+  /** Rows by hour; [] without time. */
+  readonly hours: readonly HourCount[];
+  readonly rowsOfUnits: readonly RowsOfUnits[];
+  readonly span: TimeSpan;
   readonly logEndUs: bigint | null;
   readonly account: Pick<Reduction, "rowLines" | "unitLines">;
 }
@@ -154,13 +157,10 @@ const SILENCES_KEPT = 20;
 
 async function hours(
   plan: Plan,
-  { spans }: Stages,
+  { spans, hours: all, rowsOfUnits, span }: Stages,
   engine: Engine,
 ): Promise<Pick<SoundnessFacts, "sources" | "silences">> {
-  const all = (await engine.query(rowsByHour())).map(hourCount);
-  const arms = (await engine.query(rowsByHourAndVariant(unknownLine(plan)))).map(
-    (row): ArmHour => ({ ...hourCount(row), variant: count(row, "variant") }),
-  );
+  const arms = byArm(rowsOfUnits);
   const clock = clockHours(plan.timezone);
   const made = spans.map((span) => {
     const [first, last] = [hourOf(span.firstUs), hourOf(span.lastUs)];
@@ -177,7 +177,7 @@ async function hours(
     .flatMap((one) => one.runs)
     .sort(byRows)
     .slice(0, SILENCES_KEPT);
-  const counted = runs.length === 0 ? [] : await engine.query(unitsInRuns(runs, unknownLine(plan)));
+  const counted = runs.length === 0 ? [] : await engine.query(unitsInRuns(runs, span, unknownLine(plan)));
   const silences = runs.map((run, r): Silence => {
     const start = made.find(({ source }) => source.source === run.source)?.first ?? 0;
     const row = counted.find((found) => count(found, "run") === r);
@@ -192,11 +192,15 @@ async function hours(
   return { sources: made.map(({ source }) => source), silences };
 }
 
-const hourCount = (row: Row): HourCount => ({
-  source: count(row, "source"),
-  hour: count(row, "hour"),
-  rows: count(row, "rows"),
-});
+/** Whatever their place. */
+function byArm(rowsOfUnits: readonly RowsOfUnits[]): ArmHour[] {
+  const arms = new Map<string, ArmHour>();
+  for (const { source, hour, variant, rows } of rowsOfUnits) {
+    const key = `${source}/${hour}/${variant}`;
+    arms.set(key, { source, hour, variant, rows: rows + (arms.get(key)?.rows ?? 0) });
+  }
+  return [...arms.values()];
+}
 
 /** The hour of the epoch in which an instant lies; times before it count down. */
 const hourOf = (us: bigint): number => Number((us - (((us % HOUR_US) + HOUR_US) % HOUR_US)) / HOUR_US);

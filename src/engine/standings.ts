@@ -132,12 +132,15 @@ async function tablesApart(
   const xs = metrics.flatMap(({ paired }, m) =>
     paired === null ? [] : [{ m, x: measured(paired.x.x, paired.x.pivot, scales[m]?.x ?? 1, [], dialect) }],
   );
-  const tables = await decimalTables([...ys, ...xs.map(({ x }) => x)], engine, over);
+  const tables = await decimalTables(
+    [...ys, ...xs.map(({ x }) => x)].map((measure) => ({ measure, over })),
+    engine,
+  );
   const pairs = xs.flatMap(({ m, x }, i) => {
     const [y, ofY, ofX] = [ys[m], tables[m], tables[ys.length + i]];
-    return y === undefined || ofY === undefined || ofX === undefined ? [] : [{ y, x, ofY, ofX }];
+    return y === undefined || ofY === undefined || ofX === undefined ? [] : [{ y, x, over, ofY, ofX }];
   });
-  const joints = await jointTables(pairs, engine, over);
+  const joints = await jointTables(pairs, engine, dialect);
   return metrics.map((_, m) => {
     const of = tables[m];
     if (of === undefined) throw new Error(`no sums apart for metric ${m}`);

@@ -1,4 +1,5 @@
-import { count, type Engine, nano, type Row, real, whole, wholeOrNull } from "./engine.ts";
+import { cellColumns, doubleColumns, type Groups, type PairColumns, pairColumns, someAtATime } from "./columns.ts";
+import { count, type Engine, nano, whole, wholeOrNull } from "./engine.ts";
 import { nanoText } from "./nano.ts";
 import { type PowerClass, pivotAndScale } from "./pivot.ts";
 import {
@@ -6,7 +7,6 @@ import {
   classes,
   type Dialect,
   decimalValue,
-  EACH_BUCKET,
   jointCells,
   type Measured,
   type Over,
@@ -58,66 +58,42 @@ export const measured = (
   dialect: Dialect,
 ): DecimalMeasure => ({ x, pivot, scale, value: decimalValue(x, pivot, scale, dialect), classes });
 
-export async function decimalTables(
-  measures: readonly DecimalMeasure[],
-  engine: Engine,
-  over: Over = EACH_BUCKET,
-): Promise<CellTable[]> {
-  const tables = await groupedTables(measures, engine, over);
+/** A value and the rows and groups over which it is summed. */
+export interface SummedMeasure {
+  readonly measure: DecimalMeasure;
+  readonly over: Over;
+}
+
+export async function decimalTables(summed: readonly SummedMeasure[], engine: Engine): Promise<CellTable[]> {
+  const tables = await groupedTables(summed, engine);
   return tables.map(([first]) => present(first));
 }
 
 /** The same in every grouping: one list a value, first that by bucket. */
-export async function groupedTables(
-  measures: readonly DecimalMeasure[],
-  engine: Engine,
-  over: Over,
-): Promise<CellTable[][]> {
-  const found = await someAtATime(
-    measures.map((measure) => measure.value),
-    (some) => engine.query(cells(some, over)),
+export async function groupedTables(summed: readonly SummedMeasure[], engine: Engine): Promise<CellTable[][]> {
+  const asked = summed.map(({ measure, over }) => ({ value: measure.value, over }));
+  const found = await someAtATime(asked, (some) => engine.columns(cells(some)), cellColumns);
+  return summed.map(({ measure: { pivot, scale }, over }, i) =>
+    groupingsOf(over).map((g) => ({ pivot, scale, ...present(found[i])(g) })),
   );
-  return measures.map(({ pivot, scale }, i) => {
-    const { rows: all, at } = found[i] ?? { rows: [], at: 0 };
-    return byGrouping(all, over).map((rows) => ({
-      pivot,
-      scale,
-      ...powerColumns(rows, at),
-      total: rows.map((row) => nano(row, `total${at}`)),
-      smallest: rows.map((row) => nano(row, `least${at}`)),
-      largest: rows.map((row) => nano(row, `most${at}`)),
-    }));
-  });
 }
-
-const byGrouping = (rows: readonly Row[], { others = [] }: Over): Row[][] =>
-  Array.from({ length: 1 + others.length }, (_, g) => rows.filter((row) => count(row, "grouping") === g));
 
 /** Of doubles measured against 0. */
 export async function doubleTables(
-  values: readonly { readonly value: Measured; readonly scale: number }[],
+  summed: readonly { readonly value: Measured; readonly scale: number; readonly over: Over }[],
   engine: Engine,
-  over: Over = EACH_BUCKET,
 ): Promise<ScoreTable[]> {
-  const found = await someAtATime(
-    values.map(({ value }) => value),
-    (some) => engine.query(cells(some, over)),
-  );
-  return values.map(({ scale }, i) => {
-    const { rows, at } = found[i] ?? { rows: [], at: 0 };
-    return {
-      scale,
-      ...powerColumns(rows, at),
-      smallest: rows.map((row) => real(row, `least${at}`)),
-      largest: rows.map((row) => real(row, `most${at}`)),
-    };
-  });
+  const found = await someAtATime(summed, (some) => engine.columns(cells(some)), doubleColumns);
+  return summed.map(({ scale }, i) => ({ scale, ...present(found[i])(0) }));
 }
+
+const groupingsOf = ({ others = [] }: Over): number[] => [0, ...others.map((_, g) => g + 1)];
 
 /** Two values and their cells in the same groups. A unit without y has no x either. */
 export interface MeasuredPair {
   readonly y: DecimalMeasure;
   readonly x: DecimalMeasure;
+  readonly over: Over;
   readonly ofY: CellTable;
   readonly ofX: CellTable;
 }
@@ -131,10 +107,10 @@ export interface GroupedPair extends Omit<MeasuredPair, "ofY" | "ofX"> {
 export async function jointTables(
   pairs: readonly MeasuredPair[],
   engine: Engine,
-  over: Over = EACH_BUCKET,
+  dialect: Dialect,
 ): Promise<JointTable[]> {
   const grouped = pairs.map((pair) => ({ ...pair, ofY: [pair.ofY], ofX: [pair.ofX] }));
-  const tables = await groupedJointTables(grouped, engine, over);
+  const tables = await groupedJointTables(grouped, engine, dialect);
   return tables.map(([first]) => present(first));
 }
 
@@ -142,61 +118,56 @@ export async function jointTables(
 export async function groupedJointTables(
   pairs: readonly GroupedPair[],
   engine: Engine,
-  over: Over,
+  dialect: Dialect,
 ): Promise<JointTable[][]> {
-  const asked = pairs.map(({ y, x, ofY: [ofY], ofX: [ofX] }) => ({
-    y: y.value,
-    x: x.value,
-    isPartial: sum(present(ofY).n) !== sum(present(ofX).n),
+  const asked = pairs.map(({ y, x, over, ofY: [ofY], ofX: [ofX] }) => ({
+    pair: { y: y.value, x: x.value, isPartial: sum(present(ofY).n) !== sum(present(ofX).n) },
+    over,
   }));
-  const found = await someAtATime(asked, (some) => engine.query(jointCells(some, over)));
-  return pairs.map((pair, i) => {
-    const { rows, at } = found[i] ?? { rows: [], at: 0 };
-    const isPartial = asked[i]?.isPartial ?? false;
-    return byGrouping(rows, over).map((own, g) => {
+  const found = await someAtATime(asked, (some) => engine.columns(jointCells(some, dialect)), pairColumns);
+  return pairs.map((pair, i) =>
+    groupingsOf(pair.over).map((g) => {
       const [ofY, ofX] = [present(pair.ofY[g]), present(pair.ofX[g])];
-      return jointTable({ ...pair, ofY, ofX }, own, at, isPartial);
-    });
-  });
+      return jointTable({ ...pair, ofY, ofX }, present(found[i])(g), asked[i]?.pair.isPartial ?? false);
+    }),
+  );
 }
 
-function jointTable(
-  { y, x, ofY, ofX }: MeasuredPair,
-  rows: readonly Row[],
-  at: number,
-  isPartial: boolean,
-): JointTable {
-  const [rowOfY, rowOfX] = [finder(ofY), finder(ofX)];
-  const inY = (own: string, column: readonly bigint[]) =>
-    rows.map((row) => (isPartial ? whole(row, own) : part(column, rowOfY(row))));
-  const inX = (column: readonly bigint[]) => rows.map((row) => part(column, rowOfX(row)));
+function jointTable({ y, x, ofY, ofX }: MeasuredPair, own: PairColumns, isPartial: boolean): JointTable {
+  const [rowsOfY, rowsOfX] = [rowsOf(ofY, own), rowsOf(ofX, own)];
+  const inY = (whole: readonly bigint[], column: readonly bigint[]) =>
+    isPartial ? whole : rowsOfY.map((row) => part(column, row));
+  const inX = (column: readonly bigint[]) => rowsOfX.map((row) => part(column, row));
   return {
     pivots: [y.pivot, x.pivot],
     scales: [y.scale, x.scale],
-    ...groupColumns(rows, at),
-    high10: inY(`h${at}_10`, ofY.high1),
+    variant: own.variant,
+    bucket: own.bucket,
+    n: own.n,
+    high10: inY(own.high10, ofY.high1),
     high01: inX(ofX.high1),
-    high20: inY(`h${at}_20`, ofY.high2),
-    high11: rows.map((row) => whole(row, `h${at}_11`)),
+    high20: inY(own.high20, ofY.high2),
+    high11: own.high11,
     high02: inX(ofX.high2),
-    low10: inY(`l${at}_10`, ofY.low1),
+    low10: inY(own.low10, ofY.low1),
     low01: inX(ofX.low1),
-    low20: inY(`l${at}_20`, ofY.low2),
-    low11: rows.map((row) => whole(row, `l${at}_11`)),
+    low20: inY(own.low20, ofY.low2),
+    low11: own.low11,
     low02: inX(ofX.low2),
-    totalY: rows.map((row) => (isPartial ? nano(row, `y${at}`) : part(ofY.total, rowOfY(row)))),
+    totalY: inY(own.totalY, ofY.total),
     totalX: inX(ofX.total),
   };
 }
 
-/** Where a table has the group of a row. */
-function finder(table: CellTable): (row: Row) => number {
-  const places = new Map(table.n.map((_, i) => [`${table.variant[i]}/${table.bucket[i]}`, i]));
-  return (row) => {
-    const place = places.get(`${Number(row.variant)}/${Number(row.bucket)}`);
-    if (place === undefined) throw new Error(`a pair in group ${row.variant}/${row.bucket}, where its value has none`);
-    return place;
-  };
+/** Where a table has each of some groups; both stand in order of variant and bucket. */
+function rowsOf(table: CellTable, groups: Groups): number[] {
+  let row = 0;
+  return groups.variant.map((variant, i) => {
+    const bucket = groups.bucket[i];
+    while (row < table.n.length && !(table.variant[row] === variant && table.bucket[row] === bucket)) row += 1;
+    if (row === table.n.length) throw new Error(`a pair in group ${variant}/${bucket}, where its value has none`);
+    return row;
+  });
 }
 
 function part<T>(column: readonly T[], place: number): T {
@@ -211,41 +182,3 @@ function present<T>(table: T | undefined): T {
 }
 
 const sum = (counts: readonly number[]): number => counts.reduce((all, n) => all + n, 0);
-
-// A statement of a thousand columns takes longer to plan than to run.
-const AT_ONCE = 12;
-
-/** Rows of each value; a group in which no unit has one says nothing. */
-async function someAtATime<T>(
-  values: readonly T[],
-  ask: (some: readonly T[]) => Promise<Row[]>,
-): Promise<{ rows: Row[]; at: number }[]> {
-  const found: { rows: Row[]; at: number }[] = [];
-  for (let from = 0; from < values.length; from += AT_ONCE) {
-    const some = values.slice(from, from + AT_ONCE);
-    const rows = await ask(some);
-    found.push(...some.map((_, at) => ({ rows: rows.filter((row) => count(row, `n${at}`) > 0), at })));
-  }
-  return found;
-}
-
-const groupColumns = (rows: readonly Row[], at: number) => ({
-  variant: rows.map((row) => Number(row.variant)),
-  bucket: rows.map((row) => Number(row.bucket)),
-  n: rows.map((row) => count(row, `n${at}`)),
-});
-
-function powerColumns(rows: readonly Row[], at: number) {
-  const sums = (kind: "h" | "l", k: number) => rows.map((row) => whole(row, `${kind}${at}_${k}`));
-  return {
-    ...groupColumns(rows, at),
-    high1: sums("h", 1),
-    high2: sums("h", 2),
-    high3: sums("h", 3),
-    high4: sums("h", 4),
-    low1: sums("l", 1),
-    low2: sums("l", 2),
-    low3: sums("l", 3),
-    low4: sums("l", 4),
-  };
-}

@@ -1,8 +1,9 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import type { Layout } from "../../src/engine/layout.ts";
-import { logEnd, spansOf } from "../../src/engine/logEnd.ts";
-import { join, sql, timeBins } from "../../src/engine/sql/index.ts";
+import { logEnd } from "../../src/engine/logEnd.ts";
+import { hoursOfLog } from "../../src/engine/rowsByHour.ts";
+import { join, sql } from "../../src/engine/sql/index.ts";
 import { ascending } from "../oracle/number.ts";
 import { inEngine } from "./duck.ts";
 
@@ -13,7 +14,7 @@ interface LogRow {
   readonly counted: boolean;
 }
 
-/** The log's end as the product finds it: bins of a day from the rows, then the runs of bins. */
+/** The log's end as the product finds it: hours from the rows, then the runs of hours. */
 function endOf(rows: readonly LogRow[]): Promise<bigint | null> {
   return inEngine(async (engine) => {
     await engine.run(sql`CREATE TABLE rows (source SMALLINT, at_us BIGINT, m0 BOOLEAN, fate SMALLINT)`);
@@ -22,18 +23,10 @@ function endOf(rows: readonly LogRow[]): Promise<bigint | null> {
       // A rejected row lies far outside, and says nothing about the end.
       await engine.run(sql`INSERT INTO rows VALUES ${join([...values, sql`(0, ${900_000n * DAY}, TRUE, 1)`], ", ")}`);
     }
-    const bins = await engine.query(timeBins({ matches: [{}] } as unknown as Layout));
-    return logEnd(
-      spansOf(
-        bins.map((bin) => ({
-          source: Number(bin.source),
-          rows: Number(bin.rows),
-          firstUs: BigInt(String(bin.first_us)),
-          lastUs: BigInt(String(bin.last_us)),
-          counted: bin.counted === true,
-        })),
-      ),
-    );
+    const times = rows.map(({ atUs }) => atUs).sort(ascending);
+    const span = { firstUs: times[0] ?? 0n, lastUs: times.at(-1) ?? 0n };
+    const { spans } = await hoursOfLog({ matches: [{}] } as unknown as Layout, span, engine);
+    return logEnd(spans);
   });
 }
 

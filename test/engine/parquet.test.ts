@@ -65,6 +65,15 @@ describe("Parquet", () => {
       expect(await total(type, values)).toBe(expected);
     }
   });
+  // The engine reads row groups side by side and keeps no order of rows, but where they are numbered.
+  it("numbers rejected rows as the file has them, over many row groups", async () => {
+    const rows = `SELECT CASE WHEN i % 150000 = 149999 THEN NULL ELSE 'v' || i % 1000 END AS visitor,
+      TIMESTAMP '2026-03-02' AS "at", 's' AS event, CASE WHEN i % 2 = 0 THEN 'list' ELSE 'calendar' END AS arm, 1 AS fare
+      FROM range(600000) AS t(i)`;
+    const { rejects } = await reduced(plan(), {}, { parquet: { "log.parquet": rows }, threads: 4 });
+    const numbers = rejects.split("\n").map((line) => line.split(",")[1]);
+    expect(numbers.slice(0, -1)).toEqual(["150000", "300000", "450000", "600000"]);
+  });
   it.each([
     ["TIMESTAMP '2026-03-02 10:00:00.123456'", "2026-03-02T09:00:00.123456Z"],
     ["TIMESTAMP_NS '2026-03-02 10:00:00.123456789'", "2026-03-02T09:00:00.123456Z"],

@@ -2,7 +2,7 @@ import type { Dialect } from "./dialect.ts";
 import { double, join, name, type Statement, sql } from "./sql.ts";
 
 /**
- * Stage 9 and 10: exact power sums per variant and bucket (DESIGN 5). u = (x - pivot) / scale, t_k = u^k 2^60,
+ * Stages 10 and 11: exact power sums per variant and bucket (DESIGN 5). u = (x - pivot) / scale, t_k = u^k 2^60,
  * high = floor(t), low = floor((t - high) 2^60 + 0.5): 64-bit terms, 128-bit sums, so no order, thread or engine changes one.
  */
 
@@ -30,26 +30,38 @@ export const doubleValue = (x: Statement, scale: number): Measured => ({
   isDecimal: false,
 });
 
+/** A value and the rows and groups over which it is summed. */
+export interface Summed {
+  readonly value: Measured;
+  readonly over: Over;
+}
+
 /**
- * Reads   units
- * Gives   variant, grouping, bucket, and per value i: n<i>, h<i>_1..4, l<i>_1..4, total<i> (of decimals), least<i>, most<i>
+ * One row a value and group, all values one under the other: a column for each of a dozen sums of a dozen values would be a
+ * state of a hundred and more in every group, of which the next one is never at hand.
+ * Reads   what each is summed over, by default candidates
+ * Gives   part (place of the value), variant, grouping, bucket, n, h1..4, l1..4, total (of decimals), least, most; of a group
+ *         in which no unit has a value no row
+ * @param summed as many groupings for each, and either all decimals or none
  */
-export function cells(values: readonly Measured[], over: Over = EACH_BUCKET): Statement {
+export function cells(summed: readonly Summed[]): Statement {
+  const isDecimal = summed.some(({ value }) => value.isDecimal);
   // Three nested levels, so that each of u, its powers and their whole parts is computed once a unit.
-  const us = values.flatMap((value, i) => [sql`${value.u} AS ${name(`u${i}`)}`, sql`${value.x} AS ${name(`x${i}`)}`]);
-  const terms = values.flatMap((_, i) => {
-    const u = name(`u${i}`);
-    const powers = ORDERS.map((k) => product(Array.from({ length: k }, () => u)));
-    return [name(`x${i}`), ...ORDERS.map((k) => sql`${powers[k - 1] ?? u} * ${TWO_60} AS ${name(`t${i}_${k}`)}`)];
-  });
-  const sums = values.flatMap((value, i) => [
-    sql`count(${name(`x${i}`)}) AS ${name(`n${i}`)}`,
-    ...ORDERS.flatMap((k) => twoIntegers(name(`t${i}_${k}`), `${i}_${k}`)),
-    ...(value.isDecimal ? [sql`sum(${name(`x${i}`)}) AS ${name(`total${i}`)}`] : []),
-    sql`min(${name(`x${i}`)}) AS ${name(`least${i}`)}`,
-    sql`max(${name(`x${i}`)}) AS ${name(`most${i}`)}`,
-  ]);
-  return grouped(over, us, terms, sums);
+  const parts = summed.map(({ value, over }) => ({
+    over,
+    columns: [sql`${value.u} AS u`, sql`${value.x} AS x`],
+    has: sql`${value.x} IS NOT NULL`,
+  }));
+  const u = sql`u`;
+  const powers = ORDERS.map((k) => product(Array.from({ length: k }, () => u)));
+  const terms = [sql`x`, ...ORDERS.map((k) => sql`${powers[k - 1] ?? u} * ${TWO_60} AS ${name(`t${k}`)}`)];
+  const sums = [
+    sql`count(x) AS n`,
+    ...ORDERS.flatMap((k) => twoIntegers(name(`t${k}`), String(k))),
+    ...(isDecimal ? [sql`sum(x) AS total`] : []),
+    sql`min(x) AS least, max(x) AS most`,
+  ];
+  return grouped(parts, terms, sums);
 }
 
 /** Which rows of which table, by default of the candidates, and in which groups. */
@@ -97,10 +109,23 @@ export function aboveCaps(x: Statement, caps: readonly string[], dialect: Dialec
   return { bucket: sql`CASE ${join(cases, "\n")} END`, units: sql`(analysed AND ${above(lowest)})` };
 }
 
-/** The value that so many others exceed or equal, if it is no smaller than a bound. */
-export const valueFromTop = (x: Statement, bound: string, above: bigint, dialect: Dialect): Statement =>
-  sql`SELECT ${x} AS x FROM units WHERE ${x} >= CAST(${bound} AS ${dialect.sumType})
-    ORDER BY x DESC LIMIT 1 OFFSET ${above}`;
+/** A value of which `above` others are asked that exceed or equal it, if it is no smaller than a bound. */
+export interface FromTop {
+  readonly x: Statement;
+  readonly bound: string;
+  readonly above: bigint;
+}
+
+/** Gives place (of what was asked), x; no row where there is none. */
+export function valuesFromTop(asked: readonly FromTop[], dialect: Dialect): Statement {
+  return eachInOrder(
+    asked.map(({ x, bound, above }) => ({
+      values: sql`SELECT ${x} AS x FROM units WHERE ${x} >= CAST(${bound} AS ${dialect.sumType})`,
+      order: sql`x DESC`,
+      offset: above,
+    })),
+  );
+}
 
 /** Two values over the same units; a unit without y has no x. Partial: some units have y alone. */
 export interface Pair {
@@ -109,54 +134,62 @@ export interface Pair {
   readonly isPartial: boolean;
 }
 
+/** A pair and the rows and groups over which it is summed. */
+export interface SummedPair {
+  readonly pair: Pair;
+  readonly over: Over;
+}
+
 /**
  * What the cells of two values lack for their joint sums: the sum of products, and of a partial pair the sums of y over
  * the units that have x.
- * Gives   variant, grouping, bucket, and per pair i: n<i>, h<i>_11, l<i>_11; of a partial one h<i>_10, l<i>_10, h<i>_20, l<i>_20, y<i>
+ * Gives   part (place of the pair), variant, grouping, bucket, n, h11, l11; of a partial one h10, l10, h20, l20, y, which are 0
+ *         for others
  */
-export function jointCells(pairs: readonly Pair[], over: Over = EACH_BUCKET): Statement {
-  const us = pairs.flatMap(({ y, x, isPartial }, i) => [
-    sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.u} END AS ${name(`u${i}`)}, ${x.u} AS ${name(`w${i}`)}`,
-    ...(isPartial ? [sql`CASE WHEN ${x.x} IS NOT NULL THEN ${y.x} END AS ${name(`y${i}`)}`] : []),
-  ]);
-  const terms = pairs.flatMap(({ isPartial }, i) => {
-    const [u, w] = [name(`u${i}`), name(`w${i}`)];
-    return [
-      sql`${u} * ${w} * ${TWO_60} AS ${name(`t${i}_11`)}`,
-      ...(isPartial
-        ? [
-            name(`y${i}`),
-            sql`${u} * ${TWO_60} AS ${name(`t${i}_10`)}`,
-            sql`${u} * ${u} * ${TWO_60} AS ${name(`t${i}_20`)}`,
-          ]
-        : []),
-    ];
-  });
-  const sums = pairs.flatMap(({ isPartial }, i) => [
-    sql`count(${name(`t${i}_11`)}) AS ${name(`n${i}`)}`,
-    ...["11", ...(isPartial ? ["10", "20"] : [])].flatMap((jk) => twoIntegers(name(`t${i}_${jk}`), `${i}_${jk}`)),
-    ...(isPartial ? [sql`sum(${name(`y${i}`)}) AS ${name(`y${i}`)}`] : []),
-  ]);
-  return grouped(over, us, terms, sums);
+export function jointCells(summed: readonly SummedPair[], dialect: Dialect): Statement {
+  const parts = summed.map(({ pair: { y, x, isPartial }, over }) => ({
+    over,
+    columns: [
+      sql`${y.u} AS u, ${x.u} AS w`,
+      isPartial
+        ? sql`${y.u} AS own, ${y.x} AS y`
+        : sql`CAST(NULL AS DOUBLE) AS own, CAST(NULL AS ${dialect.sumType}) AS y`,
+    ],
+    has: sql`${y.x} IS NOT NULL AND ${x.x} IS NOT NULL`,
+  }));
+  const terms = [sql`y, u * w * ${TWO_60} AS t11, own * ${TWO_60} AS t10, own * own * ${TWO_60} AS t20`];
+  const sums = [
+    sql`count(*) AS n`,
+    ...["11", "10", "20"].flatMap((jk) => twoIntegers(name(`t${jk}`), jk)),
+    sql`coalesce(sum(y), 0) AS y`,
+  ];
+  return grouped(parts, terms, sums);
 }
 
-/** Sums by variant and bucket, and for every other grouping by variant and its group, which stands as bucket too. */
-function grouped(
-  { bucket, others = [], units, from = sql`candidates` }: Over,
-  us: readonly Statement[],
-  terms: readonly Statement[],
-  sums: readonly Statement[],
-): Statement {
-  const groups = [bucket, ...others].map((group, g) => ({ group, as: name(`g${g}`) }));
-  const columns = groups.map(({ as }) => as);
+/** Some columns over a row, the rows that have them, and over which they are summed. */
+interface Part {
+  readonly over: Over;
+  readonly columns: readonly Statement[];
+  readonly has: Statement;
+}
+
+/** Sums by part, variant and bucket, and for every other grouping by its group, which stands as bucket too. */
+function grouped(parts: readonly Part[], terms: readonly Statement[], sums: readonly Statement[]): Statement {
+  const columns = [sql`bucket`, ...(parts[0]?.over.others ?? [])].map((_, g) => name(`g${g}`));
+  const rows = parts.map(({ over: { bucket, others = [], units, from = sql`candidates` }, columns, has }, part) => {
+    const groups = [bucket, ...others].map((group, g) => sql`${group} AS ${name(`g${g}`)}`);
+    return sql`
+      SELECT ${list([sql`${part} AS part`, sql`variant`, ...groups, ...columns])}
+      FROM ${from} WHERE ${units} AND ${has}`;
+  });
   return sql`
-    SELECT ${list([sql`variant`, ...placeOf(columns), ...sums])}
+    SELECT ${list([sql`part, variant`, ...placeOf(columns), ...sums])}
     FROM (
-      SELECT ${list([sql`variant`, ...columns, ...terms])}
-      FROM (SELECT ${list([sql`variant`, ...groups.map(({ group, as }) => sql`${group} AS ${as}`), ...us])} FROM ${from} WHERE ${units})
+      SELECT ${list([sql`part, variant`, ...columns, ...terms])}
+      FROM (${join(rows, "\nUNION ALL\n")})
     )
-    GROUP BY GROUPING SETS (${list(columns.map((column) => sql`(variant, ${column})`))})
-    ORDER BY variant, grouping, bucket`;
+    GROUP BY GROUPING SETS (${list(columns.map((column) => sql`(part, variant, ${column})`))})
+    ORDER BY part, grouping, variant, bucket`;
 }
 
 /** Which grouping a row of sums belongs to, and its group there. */
@@ -177,30 +210,28 @@ function twoIntegers(t: Statement, suffix: string): Statement[] {
   ];
 }
 
-/** The unit of an arm at which a key has some value, and the pair that is asked of it. */
-export interface EndOfArm {
-  readonly variant: number;
-  /** Index into the keys. */
-  readonly key: number;
-  readonly at: Statement;
+/** A pair (y, x) of each unit, and the key by which its arm's ends are found: at some value of it a variant. */
+export interface KeyedPair {
+  readonly key: Statement;
   readonly y: Statement;
   readonly x: Statement;
+  readonly ends: readonly { readonly variant: number; readonly end: number; readonly at: Statement }[];
 }
 
-/** The pair (y, x) of the unit at each end, of several the smallest pair. Gives y<i>, x<i>. */
-export function pairsAtEnds(keys: readonly Statement[], ends: readonly EndOfArm[]): Statement {
-  const computed = keys.map((key, k) => sql`${key} AS ${name(`key${k}`)}`);
-  const pairs = ends.map(
-    ({ variant, key, at, y, x }, i) => sql`
-      min({'y': ${y}, 'x': ${x}}) FILTER (WHERE variant = ${variant} AND ${name(`key${key}`)} = ${at}) AS ${name(`pair${i}`)}`,
+/** The pair of the unit at each end, of several the smallest pair. Gives part (place of the pair), variant, end, y, x. */
+export function pairsAtEnds(pairs: readonly KeyedPair[]): Statement {
+  const parts = pairs.flatMap(({ key, y, x, ends }, part) =>
+    [...new Set(ends.map(({ end }) => end))].map((end) => {
+      const own = ends.filter((one) => one.end === end);
+      const cases = own.map(({ variant, at }) => sql`WHEN ${variant} THEN ${at}`);
+      return sql`
+        SELECT ${part} AS part, variant, ${end} AS end_of, min({'y': y, 'x': x}) AS pair
+        FROM (SELECT variant, ${key} AS key, ${y} AS y, ${x} AS x FROM units)
+        WHERE key = CASE variant ${join(cases, "\n")} END
+        GROUP BY variant`;
+    }),
   );
-  const parts = ends.map((_, i) => {
-    const pair = name(`pair${i}`);
-    return sql`${pair}.y AS ${name(`y${i}`)}, ${pair}.x AS ${name(`x${i}`)}`;
-  });
-  return sql`
-    SELECT ${list(parts)}
-    FROM (SELECT ${list(pairs)} FROM (SELECT *, ${list(computed)} FROM units))`;
+  return sql`SELECT part, variant, end_of, pair.y AS y, pair.x AS x FROM (${join(parts, "\nUNION ALL\n")})`;
 }
 
 /** Powers by repeated multiplication, left to right: ((u u) u) u. */
@@ -215,15 +246,14 @@ function product(factors: readonly Statement[]): Statement {
  * Gives   part, class (NULL for 0), n, total, least, most
  */
 export function classes(values: readonly Statement[], from: Statement, dialect: Dialect): Statement {
-  const parts = values.map(
-    (x, part) => sql`
-    SELECT ${part} AS part, CASE WHEN x <> 0 THEN ${dialect.powerClass(sql`x`)} END AS class,
-      count(*) AS n, sum(x) AS total, min(x) AS least, max(x) AS most
-    FROM (SELECT ${x} AS x FROM ${from})
-    WHERE x IS NOT NULL
-    GROUP BY 1, 2`,
-  );
-  return join(parts, "\nUNION ALL\n");
+  const parts = values.map((x, part) => sql`SELECT ${part} AS part, ${x} AS x FROM ${from} WHERE ${x} IS NOT NULL`);
+  return sql`
+    SELECT part, class, count(*) AS n, sum(x) AS total, min(x) AS least, max(x) AS most
+    FROM (
+      SELECT part, CASE WHEN x <> 0 THEN ${dialect.powerClass(sql`x`)} END AS class, x
+      FROM (${join(parts, "\nUNION ALL\n")})
+    )
+    GROUP BY part, class`;
 }
 
 /** Exact totals per arm: n, sum of a value. Gives variant, and per value i: n<i>, total<i>. */
@@ -238,11 +268,27 @@ export const capped = (x: Statement, cap: string | null, dialect: Dialect): Stat
     ? x
     : sql`CASE WHEN ${x} > CAST(${cap} AS ${dialect.sumType}) THEN CAST(${cap} AS ${dialect.sumType}) ELSE ${x} END`;
 
-/** The value at a rank, from the nearer end. */
-export function atRank(x: Statement, rank: bigint, n: bigint): Statement {
-  return rank * 2n > n
-    ? sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x DESC LIMIT 1 OFFSET ${n - rank}`
-    : sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL ORDER BY x LIMIT 1 OFFSET ${rank - 1n}`;
+/** The values at some ranks, each from the nearer end. Gives place (of what was asked), x. */
+export function atEachRank(
+  asked: readonly { readonly x: Statement; readonly rank: bigint; readonly n: bigint }[],
+): Statement {
+  return eachInOrder(
+    asked.map(({ x, rank, n }) => ({
+      values: sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL`,
+      order: rank * 2n > n ? sql`x DESC` : sql`x`,
+      offset: rank * 2n > n ? n - rank : rank - 1n,
+    })),
+  );
+}
+
+function eachInOrder(
+  asked: readonly { readonly values: Statement; readonly order: Statement; readonly offset: bigint }[],
+): Statement {
+  const places = asked.map(
+    ({ values, order, offset }, place) =>
+      sql`SELECT ${place} AS place, x FROM (${values} ORDER BY ${order} LIMIT 1 OFFSET ${offset})`,
+  );
+  return join(places, "\nUNION ALL\n");
 }
 
 /**

@@ -5,11 +5,14 @@ export * from "./cells.ts";
 export { type Dialect, duckdb, localDay, valueList } from "./dialect.ts";
 export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
 export { atEnrolment, type EnrolmentKey, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
+/** Hours. */
+export { rowsByHour, rowsOfUnits, type TimeSpan, unitsInRuns } from "./hours.ts";
 /** Counts for the ledger and the checks. */
 export * from "./ledger.ts";
 /** Levels of subgroup columns. */
 export * from "./levels.ts";
-export { metricRows, PLACE, placeOf } from "./metricRows.ts";
+export { matched, PLACE, placeOf } from "./matched.ts";
+export { countedRows, metricRows } from "./metricRows.ts";
 /** Order statistics. */
 export { atRanks, ordered } from "./ordered.ts";
 /** The stages, in order. */
@@ -18,7 +21,6 @@ export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./ro
 export * from "./sinceEnrolment.ts";
 export { sizes } from "./sizes.ts";
 export * from "./soundness.ts";
-export { timeBins } from "./span.ts";
 export { double, join, name, type Statement, sql } from "./sql.ts";
 /** One unit, row by row. */
 export { nearestUnit, rowsOfUnit, unitEnd } from "./trace.ts";

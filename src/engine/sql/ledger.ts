@@ -8,17 +8,14 @@ export const rowsByFile = (): Statement => sql`SELECT file, count(*) AS rows FRO
 export const rowsByReason = (): Statement => sql`
   SELECT reason, count(*) AS rows FROM rows WHERE fate = ${FATE.rejected} GROUP BY reason`;
 
+/** Of the rows that no line of the ledger took, and of all that are not rejected. */
 export const timeRange = (): Statement => sql`
-  SELECT min(at_us) AS first_us, max(at_us) AS last_us FROM rows WHERE fate = ${FATE.seen}`;
+  SELECT min(at_us) FILTER (WHERE fate = ${FATE.seen}) AS first_us, max(at_us) FILTER (WHERE fate = ${FATE.seen}) AS last_us,
+    min(at_us) AS first_of_all_us, max(at_us) AS last_of_all_us
+  FROM rows WHERE fate <> ${FATE.rejected}`;
 
 export const unitsByLine = (): Statement => sql`
   SELECT line, variant, count(*) AS units, sum(rows) AS rows FROM enrolments GROUP BY line, variant`;
-
-/** Rows of the analysed units, by where they fall. */
-export const analysedRows = (): Statement => sql`
-  SELECT coalesce(sum(before_rows), 0) AS before_rows, coalesce(sum(after_rows), 0) AS after_rows,
-    coalesce(sum(inside_rows), 0) AS inside_rows
-  FROM units`;
 
 /** Analysed units by local day of enrolment and variant. */
 export const analysedByDay = (): Statement => sql`
@@ -69,15 +66,6 @@ export const otherVariantCounts = (limit: number): Statement => sql`
 /** Which of some events a row has. */
 export const eventsThatOccur = (events: Statement): Statement => sql`
   SELECT DISTINCT event AS value FROM rows WHERE event IN (${events})`;
-
-/** Counted rows of each metric, and those of them without a number. */
-export function countedRows(metrics: number): Statement {
-  const sums = Array.from({ length: metrics }, (_, m) => [`counted${m}`, `numberless${m}`]).flat();
-  return sql`SELECT ${join(
-    sums.map((column) => sql`coalesce(sum(${name(column)}), 0) AS ${name(column)}`),
-    ", ",
-  )} FROM units`;
-}
 
 /** Files with rejected rows: how many in all, and of the two reasons for which the reader could not cut them into cells. */
 export const rejectsByFile = (unreadable: number, notText: number): Statement => sql`

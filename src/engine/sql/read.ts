@@ -183,6 +183,10 @@ export function asText(column: Statement, kind: ColumnKind): Statement {
   }
 }
 
+/** NULL exactly where a column's text is, and cheaper. */
+export const present = (column: Statement, kind: ColumnKind): Statement =>
+  kind === "text" || kind === "other" ? asText(column, kind) : column;
+
 /** A numeric column's exact value, NULL when it is missing, no number or out of range. */
 export function asValue(column: Statement, kind: ColumnKind, dialect: Dialect): Statement {
   if (kind === "whole" || kind === "decimal") return sql`try_cast(${column} AS ${dialect.valueType})`;

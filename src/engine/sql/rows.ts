@@ -3,7 +3,7 @@ import { FATE, type Layout } from "../layout.ts";
 import type { FileGroup } from "../source.ts";
 import type { Step } from "../zone.ts";
 import { type Dialect, localOffset } from "./dialect.ts";
-import { asText, asTime, asValue, kindsOf, read } from "./read.ts";
+import { asText, asTime, asValue, kindsOf, present, read } from "./read.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 import { matches, where } from "./where.ts";
 
@@ -48,6 +48,7 @@ export function rows(
   ];
   const enrolmentEvent =
     plan.enrolment.event === null ? sql`TRUE` : sql`coalesce(event = ${plan.enrolment.event}, FALSE)`;
+  const judged = judgedRows(plan, layout, group, zone, dialect, false);
   return sql`
     ${into === "create" ? sql`CREATE TEMP TABLE rows AS` : sql`INSERT INTO rows`}
     SELECT file, source, unit, at_us, event, event_id, ${variantCode(plan)} AS variant,
@@ -56,8 +57,8 @@ export function rows(
       variant IS NOT NULL AND ${enrolmentEvent} AS enrols,
       CAST(reason AS SMALLINT) AS reason,
       CAST(CASE WHEN NOT ${isKept} THEN ${FATE.rejected} ${join(filters, "\n")} ELSE ${FATE.seen} END AS SMALLINT) AS fate,
-      CASE WHEN NOT ${isKept} THEN concat_ws(', ', ${list(rejectedText(layout))}) END AS text
-    FROM (${judgedRows(plan, layout, group, zone, dialect, false)})`;
+      CASE WHEN NOT ${isKept} THEN ${judged.text} END AS text
+    FROM (${judged.rows})`;
 }
 
 /**
@@ -71,14 +72,15 @@ export function rejectedOrdinals(
   zone: readonly Step<bigint>[],
   dialect: Dialect,
 ): Statement {
+  const judged = judgedRows(plan, layout, group, zone, dialect, true);
   return sql`
-    SELECT ordinal, reason, coalesce(raw, concat_ws(', ', ${list(rejectedText(layout))})) AS text
-    FROM (${judgedRows(plan, layout, group, zone, dialect, true)})
+    SELECT ordinal, reason, coalesce(raw, ${judged.text}) AS text
+    FROM (${judged.rows})
     WHERE reason <> ${REASON.none}
     ORDER BY ordinal`;
 }
 
-/** Typed rows with at_us and the reason of their rejection. */
+/** Typed rows with at_us and the reason of their rejection, and what rejects.csv shows of one, over a row of them. */
 function judgedRows(
   plan: Plan,
   layout: Layout,
@@ -86,13 +88,25 @@ function judgedRows(
   zone: readonly Step<bigint>[],
   dialect: Dialect,
   isNumbered: boolean,
-): Statement {
-  return sql`
-    SELECT *, ${reason(layout, dialect)} AS reason
+): { readonly rows: Statement; readonly text: Statement } {
+  const typed = typedRows(plan, layout, group, dialect, isNumbered);
+  const rows = sql`
+    SELECT *, ${reason(layout, typed, dialect)} AS reason
     FROM (
       SELECT * EXCLUDE (clock_us, offset_us), clock_us - coalesce(offset_us, ${localOffset(sql`clock_us`, zone)}) AS at_us
-      FROM (${typedRows(plan, layout, group, dialect, isNumbered)})
+      FROM (${typed.rows})
     )`;
+  // Of a row that was cut into cells those that the plan names are shown.
+  const shown = [typed.timeText, sql`event`, sql`variant`, ...layout.columns.map((_, c) => typed.text(c))];
+  return { rows, text: sql`concat_ws(', ', ${list(shown)})` };
+}
+
+/** Rows with their columns by role and by place, and what can be said of a column over one of them. */
+interface TypedRows {
+  readonly rows: Statement;
+  readonly timeText: Statement;
+  readonly text: (c: number) => Statement;
+  readonly isThere: (c: number) => Statement;
 }
 
 /** The columns that later stages order rows by, as they are stored: numbers by value, all else as text. */
@@ -116,7 +130,11 @@ export function stored(layout: Layout, c: number): Statement {
   return layout.numeric[c] === true ? name(`v${c}`) : name(`x${c}`);
 }
 
-function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialect, isNumbered: boolean): Statement {
+/**
+ * A column's text is x<c> where it is stored or some condition is asked of it. Any other is left as the reader has it, for
+ * only of rejected rows it is shown: to write out every time and number of a typed column costs more than to read them.
+ */
+function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialect, isNumbered: boolean): TypedRows {
   const roles = plan.log[group.source]?.columns;
   if (roles === undefined) throw new Error(`no entry ${group.source} of the log`);
   const wanted = [
@@ -132,26 +150,45 @@ function typedRows(plan: Plan, layout: Layout, group: FileGroup, dialect: Dialec
     roles.time === null
       ? { clockUs: sql`CAST(NULL AS BIGINT)`, offsetUs: sql`CAST(NULL AS BIGINT)` }
       : asTime(raw(roles.time), kind(roles.time), dialect);
+  const asked = columnsAsked(layout);
   const columns = layout.columns.flatMap((column, c) => [
-    sql`${text(column)} AS ${name(`x${c}`)}`,
+    ...(asked.has(c) ? [sql`${text(column)} AS ${name(`x${c}`)}`] : []),
     ...(layout.numeric[c] === true ? [sql`${asValue(raw(column), kind(column), dialect)} AS ${name(`v${c}`)}`] : []),
   ]);
-  return sql`
+  const column = (c: number) => layout.columns[c] ?? "";
+  return {
+    rows: sql`
     SELECT file, CAST(${group.source} AS SMALLINT) AS source, readable, ${text(roles.unit)} AS unit,
-      ${time.clockUs} AS clock_us, ${time.offsetUs} AS offset_us, ${text(roles.time)} AS time_text,
+      ${time.clockUs} AS clock_us, ${time.offsetUs} AS offset_us,
       ${text(roles.event)} AS event, ${text(roles.eventId)} AS event_id,
-      ${list([sql`${text(roles.variant)} AS variant`, ...(isNumbered ? [sql`ordinal`, sql`raw`] : []), ...columns])}
-    FROM (${read(group, wanted, isNumbered)})`;
+      ${list([sql`${text(roles.variant)} AS variant`, ...(isNumbered ? [sql`ordinal`, sql`raw`] : []), ...columns, ...wanted.map(raw)])}
+    FROM (${read(group, wanted, isNumbered)})`,
+    timeText: text(roles.time),
+    text: (c) => (asked.has(c) ? name(`x${c}`) : text(column(c))),
+    isThere: (c) => sql`${asked.has(c) ? name(`x${c}`) : present(raw(column(c)), kind(column(c)))} IS NOT NULL`,
+  };
 }
 
-function reason(layout: Layout, dialect: Dialect): Statement {
+/** The columns whose text each row is asked for: those that are stored as text, and those that some condition looks at. */
+function columnsAsked(layout: Layout): ReadonlySet<number> {
+  const conditions = [
+    ...layout.matches.map((match) => match.where),
+    ...layout.rowFilters.map((filter) => filter.where),
+    ...layout.flags,
+  ];
+  const tested = conditions.flatMap((tests) => tests.map((test) => layout.columns.indexOf(test.column)));
+  const kept = layout.columns.slice(0, layout.kept).flatMap((_, c) => (isStoredAsText(layout, c) ? [c] : []));
+  return new Set([...tested, ...kept]);
+}
+
+const isStoredAsText = (layout: Layout, c: number): boolean => layout.standIns[c] == null && layout.numeric[c] !== true;
+
+function reason(layout: Layout, typed: TypedRows, dialect: Dialect): Statement {
   const values = layout.columns.flatMap((_, c) => {
     if (layout.numeric[c] !== true) return [];
-    const x = name(`x${c}`);
-    const number = dialect.isNumber(x);
     return [
-      sql`WHEN ${x} IS NOT NULL AND ${name(`v${c}`)} IS NULL
-        THEN CASE WHEN ${number} THEN ${REASON.outOfRange + c} ELSE ${REASON.notNumber + c} END`,
+      sql`WHEN ${name(`v${c}`)} IS NULL AND ${typed.isThere(c)}
+        THEN CASE WHEN ${dialect.isNumber(typed.text(c))} THEN ${REASON.outOfRange + c} ELSE ${REASON.notNumber + c} END`,
     ];
   });
   const noTime = layout.hasTime ? sql`WHEN at_us IS NULL THEN ${REASON.noTime}` : sql``;
@@ -162,11 +199,6 @@ function reason(layout: Layout, dialect: Dialect): Statement {
 function variantCode(plan: Plan): Statement {
   const cases = plan.variants.map((variant, i) => sql`WHEN ${variant.name} THEN ${i}`);
   return sql`CAST(CASE WHEN variant IS NULL THEN NULL ELSE CASE variant ${join(cases, "\n")} ELSE ${plan.variants.length} END END AS SMALLINT)`;
-}
-
-/** What rejects.csv shows of a row that was cut into cells: those that the plan names. */
-function rejectedText(layout: Layout): Statement[] {
-  return [sql`time_text`, sql`event`, sql`variant`, ...layout.columns.map((_, c) => name(`x${c}`))];
 }
 
 const list = (items: readonly Statement[]) => join(items, ", ");

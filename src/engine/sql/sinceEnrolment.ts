@@ -1,5 +1,5 @@
 import type { Plan } from "../../plan/types.ts";
-import { FATE, type Layout, type PartLayout, unitLineIds } from "../layout.ts";
+import { type Layout, type PartLayout, unitLineIds } from "../layout.ts";
 import type { Dialect } from "./dialect.ts";
 import { followUpUs } from "./enrolments.ts";
 import { double, join, name, type Statement, sql } from "./sql.ts";
@@ -13,8 +13,8 @@ export interface DailyPart {
 }
 
 /**
- * Stage 11: what each analysed unit that was followed to the end did on each day since its enrolment, days of 24 hours.
- * Reads   rows, enrolments
+ * Stage 12: what each analysed unit that was followed to the end did on each day since its enrolment, days of 24 hours.
+ * Reads   matched, enrolments
  * Writes  by_day: id (the enrolments' rowid), variant, day (0, 1, ...), d<p>, the part's value of that day alone
  * A day on which a unit has no row that counts has no row here either, which stands for zeros. Under a cap d<p> is what the
  * day adds to the unit's capped value, so that the days add up to that.
@@ -44,12 +44,11 @@ export function byDay(
       FROM (
         SELECT ${list([sql`key // ${days} AS id`, sql`CAST(key % ${days} AS SMALLINT) AS day`, ...values])}
         FROM (
-          SELECT e.rowid * ${days} + (r.at_us - e.enrolled_us) // ${DAY_US} AS key, r.*
-          FROM rows AS r
-          JOIN enrolments AS e ON e.unit = r.unit
-          WHERE r.fate = ${FATE.seen} AND (${join(counts, " OR ")}) AND e.line = ${analysed}
-            AND e.enrolled_us + ${followUpUs(plan)} <= ${logEndUs}
-            AND r.at_us >= e.enrolled_us AND r.at_us < e.enrolled_us + ${BigInt(days) * DAY_US}
+          SELECT id * ${days} + (at_us - enrolled_us) // ${DAY_US} AS key, *
+          FROM matched
+          WHERE (${join(counts, " OR ")}) AND line = ${analysed}
+            AND enrolled_us + ${followUpUs(plan)} <= ${logEndUs}
+            AND at_us >= enrolled_us AND at_us < enrolled_us + ${BigInt(days) * DAY_US}
         )
         GROUP BY key
       ) AS s

@@ -2,7 +2,7 @@ import type { Plan } from "../../plan/types.ts";
 import type { Layout } from "../layout.ts";
 import type { Dialect } from "./dialect.ts";
 import { canonicalOrder } from "./duplicates.ts";
-import { placeOf } from "./metricRows.ts";
+import { placeOf } from "./matched.ts";
 import { join, name, type Statement, sql } from "./sql.ts";
 
 /** What a person asks about one unit. All read tables of the stages up to the enrolments; none writes. */
