@@ -3,7 +3,9 @@ import { tmpdir } from "node:os";
 import path from "node:path";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
 import { lyingExtras } from "../../src/report/extra-names.ts";
-import { renderReport } from "../../src/report/index.ts";
+import { figureFiles } from "../../src/report/figures/files.ts";
+import { renderReport, reportJson } from "../../src/report/index.ts";
+import { page } from "../../src/report/page.ts";
 import { cssText } from "../../src/report/render.ts";
 import { adopt, notSettled, several, undecidable } from "./cases.ts";
 import { everyCase } from "./every.ts";
@@ -99,6 +101,21 @@ describe("the estimates before and after, as a file,", () => {
       /Booked \+10\.8% \(\+7\.3% to \+14\.4%\) first run Booked \+10\.0% \(\+6\.5% to \+13\.7%\) now/,
     );
     expect(svg).toContain("Upper line of each pair, dashed: the first run.");
+  });
+});
+
+describe("a long name of a measure", () => {
+  // two variants' rows read "Seconds until the page shows, 95th percentile…" both
+  it("is cut before the variant that tells two rows of the picture apart", async () => {
+    const metric = "Seconds until the search page shows, the 95th percentile";
+    const row = { metric, run: "now", isNow: true, drawing: null, estimate: "+1%", interval: "" };
+    const rows = ["calendar", "map"].map((variant) => ({ ...row, variant: ` with "${variant}"` }));
+    const whole = await page(secondRun, reportJson(secondRun).changes);
+    if (whole.changes === null) throw new Error("a second run without changes");
+    const figure = { ...whole.changes.figure, rows };
+    const files = figureFiles({ ...whole, changes: { ...whole.changes, figure } });
+    const text = textOf(files.find(({ name }) => name === "figures/before-after.svg")?.text ?? "");
+    for (const variant of ["calendar", "map"]) expect(text).toMatch(new RegExp(`Seconds [^…]*… with "${variant}"`));
   });
 });
 

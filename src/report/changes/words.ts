@@ -135,6 +135,11 @@ export function movedText({ before, after }: Pick<LineChange, "before" | "after"
   return by > 0 ? `+${count(by)}` : count(by);
 }
 
-export function nameOf({ metric, variant }: Pick<EffectChange, "metric" | "variant">, plan: Plan): string {
-  return plan.variants.length > 2 ? `${metric}, ${quoted(variant)}` : metric;
+export function nameOf(effect: Pick<EffectChange, "metric" | "variant">, plan: Plan): string {
+  return `${effect.metric}${withVariant(effect, plan)}`;
+}
+
+/** ' with "map"', where there are several variants. */
+export function withVariant({ variant }: Pick<EffectChange, "variant">, plan: Plan): string {
+  return plan.variants.length > 2 ? ` with ${quoted(variant)}` : "";
 }

@@ -6,7 +6,7 @@ import type { FlowFigure, FlowStep } from "../sections/flow.ts";
 import type { ForestTable } from "../sections/forest.ts";
 import type { SamplingFigure } from "../sections/sampling.ts";
 import type { SubgroupPart } from "../sections/subgroups.ts";
-import { type Sheet, type SheetRow, sheetSvg } from "./sheet.ts";
+import { type Sheet, type SheetRow, sheetSvg, within } from "./sheet.ts";
 
 export interface FigureFile {
   readonly name: string;
@@ -115,10 +115,11 @@ function rowsSheet({ title, reading, rows, axis }: RowsFigure, columns: Columns)
   return { title, note: reading, rows: [...lines, ...last] };
 }
 
+/** A long name of a measure is cut before its variant, which tells two rows apart. */
 function beforeAfterSheet({ title, reading, rows, axis }: BeforeAfter): Sheet {
-  const lines = rows.map(({ metric, run, isNow, ...row }) => ({
+  const lines = rows.map(({ metric, variant, run, isNow, ...row }) => ({
     ...row,
-    choice: metric,
+    choice: `${within(metric, Math.max(8, NAME_ROOM - [...variant].length))}${variant}`,
     stands: run,
     isPlanned: isNow,
   }));

@@ -1,7 +1,7 @@
 import type { Plan } from "../../plan/index.ts";
 import { count, planPercent, plural } from "../../words/index.ts";
 import type { ChangesJson, EffectChange } from "../changes/types.ts";
-import { movedText, nameOf, ordinal, saidBefore, shownTexts } from "../changes/words.ts";
+import { movedText, ordinal, saidBefore, shownTexts, withVariant } from "../changes/words.ts";
 import { type Drawing, draw } from "../charts/draw.ts";
 import { type ForestAxis, type ForestRow, forestAxis, forestScale, forestStrip } from "../charts/forest.ts";
 import { theme } from "../charts/theme.ts";
@@ -58,6 +58,8 @@ export interface BeforeAfter {
 }
 export interface BeforeAfterRow {
   readonly metric: string;
+  /** ' with "map"', or nothing. */
+  readonly variant: string;
   readonly run: string;
   readonly isNow: boolean;
   readonly drawing: Drawing | null;
@@ -142,7 +144,8 @@ async function beforeAfter({ effects }: ChangesJson, plan: Plan, before: string)
     for (const isNow of [false, true]) {
       const own = isNow ? text.after : text.before;
       rows.push({
-        metric: nameOf(text.effect, plan),
+        metric: text.effect.metric,
+        variant: withVariant(text.effect, plan),
         run: isNow ? "now" : before,
         isNow,
         drawing:
