@@ -52,6 +52,8 @@ async function* ids(file: string, name: string, unitColumns: readonly string[]):
   const delimiter = /\.tsv(\.gz|\.zst)?$/i.test(file) ? "\t" : ",";
   let column: number | null = null;
   for await (const { line, text, cells } of records(textOf(file), delimiter)) {
+    if (text.includes("\0"))
+      throw new UnusableLog(`${name} holds bytes that no text has. Give the ids as text, one a line.`);
     if (column === null) {
       column = cells?.findIndex((cell) => unitColumns.includes(cell)) ?? -1;
       if (column >= 0) continue;

@@ -15,8 +15,11 @@ interface Rejected {
   /** Physical line, of Parquet the row; null where it cannot be told. */
   readonly line: number | null;
   readonly reason: number;
+  /** Quotes spoilt the record, or those of one above swallowed it: said in place of the reason. */
+  readonly isSpoilt?: boolean;
   readonly text: string;
 }
+const SPOILT = "cannot be read: a quote in it or above it does not close where a cell ends";
 
 /** The log as it was read. */
 export interface ReadLog {
@@ -49,7 +52,8 @@ export async function writeRejects(to: string, log: ReadLog, engine: Engine, dia
     };
     const found = (await rejectedOf(file, own, expected, log, engine, dialect)) ?? (await withoutLines(index, engine));
     for (const one of found) {
-      await write([file.name, one.line === null ? "" : String(one.line), reasonText(one.reason, log.layout), one.text]);
+      const why = one.isSpoilt === true ? SPOILT : reasonText(one.reason, log.layout);
+      await write([file.name, one.line === null ? "" : String(one.line), why, one.text]);
     }
   }
   out.end();
@@ -114,7 +118,7 @@ async function placedRows(
       // Bytes that are no UTF-8 are decoded to this sign.
       found.push({ line, reason: REASON.notText, text });
     } else if (!fits(record, group.columns.length)) {
-      found.push({ line, reason: REASON.unreadable, text });
+      found.push({ line, reason: REASON.unreadable, isSpoilt: record.cells === null, text });
     } else {
       ordinal += 1;
       const reason = reasons.get(ordinal);

@@ -40,7 +40,10 @@ export function correctKeys(yaml: YamlText): readonly Problem[] {
 /** Everything in which the data differs from the schema, one problem a place. Misspelt keys are corrected before. */
 export function shapeProblems(value: unknown, yaml: YamlText): readonly Problem[] {
   const strange = unknownKeys(value).map(({ path, key, known }): Problem => {
-    return { path: [...path, key], at: "key", message: `Unknown key. Known here: ${known.join(", ")}.` };
+    const message = /^\d+%?$/.test(key)
+      ? "A comma ends the value before it. Write numbers with a point, and without separators."
+      : `Unknown key. Known here: ${known.join(", ")}.`;
+    return { path: [...path, key], at: "key", message };
   });
   const told = new Set<string>();
   const wrong = issuesOf(value).flatMap((issue) => {

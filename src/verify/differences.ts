@@ -14,9 +14,10 @@ export interface Difference {
 export function differences(given: string, made: string): Difference[] {
   const lines = given.split("\n");
   return hunks(lines, made.split("\n")).flatMap(({ at, given: a, made: b }) =>
-    Array.from({ length: Math.max(a.length, b.length) }, (_, i) =>
-      difference(placeOf(lines, at + Math.min(i, a.length)), a[i] ?? "", b[i] ?? ""),
-    ),
+    // Of pages with little in common lines are set against each other by their places, and may be the same.
+    Array.from({ length: Math.max(a.length, b.length) }, (_, i) => i)
+      .filter((i) => a[i] !== b[i])
+      .map((i) => difference(placeOf(lines, at + Math.min(i, a.length)), a[i] ?? "", b[i] ?? "")),
   );
 }
 

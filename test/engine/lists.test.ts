@@ -77,6 +77,11 @@ describe("a list of ids", () => {
       /ids\.csv, line 3, cannot be cut into cells/,
     );
   });
+  it("that is no text, such as a Parquet file, stops the run: taken for ids it would remove nobody", async () => {
+    await expect(dropped("PAR1\u0015\0\u0015\nv1\n")).rejects.toThrow(
+      "ids.csv holds bytes that no text has. Give the ids as text, one a line.",
+    );
+  });
   it("without a header takes each line whole, a comma or a quote in it included", async () => {
     expect(await dropped('v1\na,b\nq"q\n')).toEqual(["v1", "a,b", 'q"q']);
   });

@@ -68,3 +68,11 @@ describe("a difference", () => {
     expect(differences(PAGE.replace('class="lead"', 'class="lead" hidden'), PAGE)).toMatchObject([{ kind: "markup" }]);
   });
 });
+
+it("of two pages with little in common leave out the lines that are the same", () => {
+  const page = (word: string) =>
+    Array.from({ length: 2_500 }, (_, i) => (i % 2 === 0 ? "<tbody>" : `<p>${word} ${i}</p>`));
+  const found = differences(page("one").join("\n"), page("two").join("\n"));
+  expect(found.some(({ given, made }) => given === made)).toBe(false);
+  expect(found.length).toBe(1_250);
+});

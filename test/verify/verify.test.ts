@@ -137,6 +137,21 @@ describe("a report that was changed by hand", () => {
   });
 });
 
+describe("a file beside a report that is one long line", () => {
+  it("is shown where it differs, not by its beginning", async () => {
+    const beside = join(on.report, "cells.json");
+    const json = readFileSync(beside, "utf8");
+    const at = json.lastIndexOf("1");
+    writeFileSync(beside, `${json.slice(0, at)}2${json.slice(at + 1)}`);
+    const { status, text } = await verify(file);
+    writeFileSync(beside, json);
+    expect(status).toBe(4);
+    const [, given = "", made = ""] =
+      /cells\.json beside it, line \d+\. In the file: \u201c(.*)\u201d\. Recomputed: \u201c(.*)\u201d/.exec(text) ?? [];
+    expect([given.length > 10, given.length < 200, given === made]).toEqual([true, true, false]);
+  });
+});
+
 describe("a log that was changed since", () => {
   afterAll(() => writeFileSync(join(on.folder, "log.csv"), LOG));
 

@@ -46,6 +46,9 @@ function unreadable(path: Path, value: unknown, zone: string): readonly Problem[
   if (typeof value !== "string" || value.trim() === "") return [];
   // a log may count time in seconds since 1970; a plan is to be read
   if (parseTime(value, zone) !== null && !/^[+-]?\d+$/.test(value)) return [];
+  const day = /^\d{4}-\d\d-\d\d/.exec(value)?.[0];
+  if (day !== undefined && parseTime(day, zone) === null)
+    return [{ path, at: "value", message: `The calendar has no ${day}.` }];
   const message = "Expected a date such as 2026-03-02, or a time such as 2026-03-02T08:00 or 2026-03-02T08:00+01:00.";
   return [{ path, at: "value", message }];
 }

@@ -37,6 +37,15 @@ export const SHAPE: readonly WrongPlan[] = [
     says: [["decision", "Unknown key. Known here: confidence, power, adopt-when, primaries, interval."]],
   },
   {
+    title: "numbers with a comma inside braces, where it ends the value",
+    plan: { decision: "decision: {confidence: «0»,«95»}", planned: "planned: {units: 100,«000»}" },
+    says: [
+      ["decision", "Expected a number between 0 and 1."],
+      ["decision", "A comma ends the value before it. Write numbers with a point, and without separators."],
+      ["planned", "A comma ends the value before it. Write numbers with a point, and without separators."],
+    ],
+  },
+  {
     title: "a key whose only near one is taken",
     plan: { "unit-called": "unit-called: {one: visitor, many: visitors, «ones»: visitor}" },
     says: [["unit-called", "Unknown key. Known here: one, many."]],

@@ -127,10 +127,7 @@ export const VALUES: readonly WrongPlan[] = [
     plan: { timezone: "timezone: «Europe/Olso»", enrolment: "enrolment: {from: «2026-02-30», before: «16.3.2026»}" },
     says: [
       ["", "Expected a time zone such as Europe/Oslo or UTC. Did you mean Europe/Oslo?"],
-      [
-        "enrolment",
-        "Expected a date such as 2026-03-02, or a time such as 2026-03-02T08:00 or 2026-03-02T08:00+01:00.",
-      ],
+      ["enrolment", "The calendar has no 2026-02-30."],
       [
         "enrolment",
         "Expected a date such as 2026-03-02, or a time such as 2026-03-02T08:00 or 2026-03-02T08:00+01:00.",
