@@ -149,7 +149,7 @@ export function localDay(atUs: Statement, table: readonly Step<DayRun>[]): State
   return steps(atUs, table, ({ from, value }) =>
     value.days === 1
       ? sql`${value.first}`
-      : sql`${value.first} + least((${atUs} - ${from}) // 86400000000, ${value.days - 1})`,
+      : sql`(${value.first} + least((${atUs} - ${from}) // 86400000000, ${value.days - 1}))`,
   );
 }
 
