@@ -6,6 +6,7 @@ export type ColumnKind =
   | "whole"
   | "decimal"
   | "float"
+  | "double"
   | "boolean"
   | "timestamp"
   | "nanoseconds"
@@ -32,7 +33,8 @@ export function kindOf(type: string): ColumnKind {
   if (type === "VARCHAR" || type.startsWith("ENUM")) return "text";
   if (/^U?(TINY|SMALL|BIG|HUGE)?INT(EGER)?$/.test(type)) return "whole";
   if (type.startsWith("DECIMAL")) return "decimal";
-  if (type === "FLOAT" || type === "DOUBLE") return "float";
+  if (type === "FLOAT") return "float";
+  if (type === "DOUBLE") return "double";
   if (type === "BOOLEAN") return "boolean";
   if (type === "TIMESTAMP WITH TIME ZONE") return "instant";
   if (type === "TIMESTAMP_NS") return "nanoseconds";

@@ -49,4 +49,11 @@ describe("days with a counted row", () => {
     const visits = ["2026-03-01T09:59:59.999999", "2026-03-01T10:00", "2026-03-08T09:59:59.999999", "2026-03-08T10:00"];
     expect(await days(7, "UTC", "2026-03-01T10:00", visits)).toBe("1: 2");
   });
+  // Readers saw the run stop with an error of the engine, once units had enrolled a month and more after the log's start.
+  it("are counted from the unit's own enrolment, however long after the log's first row that is", async () => {
+    const rows = ["v0,2026-01-01,search,list", "v1,2026-03-20T10:00,search,list"];
+    const visits = ["2026-03-20T11:00", "2026-03-22T09:00", "2026-03-22T21:00"].map((at) => `v1,${at},visit,`);
+    const text = ["visitor,at,event,arm", ...rows, ...visits, ""].join("\n");
+    expect((await reduced(plan(7, "UTC"), { "log.csv": text })).arms[0]?.[0]).toBe("2: 2");
+  });
 });

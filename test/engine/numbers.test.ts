@@ -5,6 +5,7 @@ import { double, duckdb, sql } from "../../src/engine/sql/index.ts";
 import { parseNumber } from "../../src/plan/index.ts";
 import { evaluated, inEngine, inOrder } from "./duck.ts";
 
+const TIE = 5e-10;
 const LARGEST = 10n ** 27n - 1n;
 
 /** What a log's text is worth in 10^-9, from the plan room's exact decimal: half away from zero, below 10^18. */
@@ -261,5 +262,40 @@ describe("the double of a decimal", () => {
         { numRuns: 5, endOnFailure: true },
       );
     });
+  });
+});
+
+describe("a double", () => {
+  /** The doubles that the engine takes for another number than their shortest decimal, which is how String writes them. */
+  const mistaken = (xs: readonly number[]) =>
+    inEngine(async (engine) => {
+      const text = sql`regexp_replace(CAST(x AS VARCHAR), '[.]0$', '')`;
+      const found = await inOrder(engine, xs.map(double), duckdb.numberOfDouble(sql`x`, duckdb.number(text)));
+      return xs.flatMap((x, i) => {
+        const value = read(found[i], true);
+        const expected = reference(String(x).replace("e+", "e"));
+        return value === expected ? [] : [{ x, value, expected }];
+      });
+    });
+  const steps = (x: number) => [x * (1 - 2 ** -52), x * (1 - 2 ** -53), x, x * (1 + 2 ** -52), x * (1 + 2 ** -51)];
+
+  it("is worth its shortest decimal, beside every tie of the tenth place", async () => {
+    const ties = [0, 1, 2, 7, 1e3, 123_456_789, 1e12, 4e14, 999_999_999_999_999].map((k) => (k + 0.5) / 1e9);
+    const xs = [...ties, 0.1, 0.3, 1 / 7, 999_999.999999999, 1e6, 123_456.7890123455, TIE].flatMap(steps);
+    expect(await mistaken([...xs, ...xs.map((x) => -x), 0, -0, 5e-324, 1e17, 1e300])).toEqual([]);
+  });
+  it("is so wherever it lies", async () => {
+    const size = fc.tuple(fc.double({ min: 1, max: 10, noNaN: true }), fc.integer({ min: -13, max: 19 }));
+    const some = fc.oneof(
+      size.map(([x, power]) => x * 10 ** power),
+      fc.tuple(fc.maxSafeNat(), fc.integer({ min: 0, max: 10 })).map(([k, places]) => k / 10 ** places),
+      fc.maxSafeNat().map((k) => (k % 1e15) / 1e9 + TIE),
+    );
+    await fc.assert(
+      fc.asyncProperty(fc.array(some, { minLength: 500, maxLength: 500 }), async (xs) => {
+        expect(await mistaken(xs.flatMap((x) => [x, -x]))).toEqual([]);
+      }),
+      { numRuns: 8 },
+    );
   });
 });

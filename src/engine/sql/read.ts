@@ -176,6 +176,7 @@ export function asText(column: Statement, kind: ColumnKind): Statement {
     case "text":
       return sql`nullif(${column}, '')`;
     case "float":
+    case "double":
       // A floating-point column stands for its shortest decimal: 1 and not 1.0.
       return sql`regexp_replace(CAST(${column} AS VARCHAR), '[.]0$', '')`;
     default:
@@ -190,7 +191,8 @@ export const present = (column: Statement, kind: ColumnKind): Statement =>
 /** A numeric column's exact value, NULL when it is missing, no number or out of range. */
 export function asValue(column: Statement, kind: ColumnKind, dialect: Dialect): Statement {
   if (kind === "whole" || kind === "decimal") return sql`try_cast(${column} AS ${dialect.valueType})`;
-  return dialect.number(asText(column, kind));
+  const number = dialect.number(asText(column, kind));
+  return kind === "double" ? dialect.numberOfDouble(column, number) : number;
 }
 
 /** Clock time and stated offset, both in microseconds; an offset of NULL means the plan's zone. */
