@@ -24,7 +24,7 @@ import { withoutRows } from "./without-rows.ts";
 
 export { covariates } from "./balance.ts";
 export { BEFORE_THE_END, blindChecks } from "./blind.ts";
-export { tailsInWords } from "./normality.ts";
+export { CORRECTED_COUNTS, tailsInWords } from "./normality.ts";
 export { planChanged } from "./plan-changed.ts";
 export { plannedShares } from "./planned-shares.ts";
 export type { Check, CheckOutcome, CheckPart, ContrastFigures, Figure } from "./types.ts";

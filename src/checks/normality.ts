@@ -5,6 +5,9 @@ import { percent, quoted } from "../words/index.ts";
 import { asCheck, type Finding, passed } from "./finding.ts";
 import type { Check, ContrastFigures } from "./types.ts";
 
+/** Ends the sentence of a contrast whose corrected interval decides. */
+export const CORRECTED_COUNTS = "The corrected interval counts here.";
+
 type Known = ContrastFigures & { readonly normality: Normality };
 
 /**
@@ -58,7 +61,7 @@ function judge(plan: Plan, metric: Metric, { variant, method, normality: { tails
     sentence: [
       `${start}${off}.`,
       ...(shapesDiffer ? [shapesInWords(tails)] : []),
-      ...(method === "skew-corrected" ? ["The corrected interval counts here."] : []),
+      ...(method === "skew-corrected" ? [CORRECTED_COUNTS] : []),
     ].join(" "),
     remedy: remedy(plan, metric, tails, method),
     figures,

@@ -110,20 +110,30 @@ const effects: readonly Effect[] = [
   },
 ];
 
-const figures = effects.map(
-  ({ metric, variant, control, contrast, normality }): ContrastFigures => ({
-    metric,
-    variant,
-    control,
-    method: contrast.difference.method,
-    normality,
-  }),
-);
 const ofThese = ["normality", "one-unit"];
 
+function judged(of: readonly Effect[]): ReportInputs {
+  const figures = of.map(
+    ({ metric, variant, control, contrast, normality }): ContrastFigures => ({
+      metric,
+      variant,
+      control,
+      method: contrast.difference.method,
+      normality,
+    }),
+  );
+  const found = checks(adopt.plan, adopt.reduction, figures).filter(({ id }) => ofThese.includes(id));
+  return { ...adopt, effects: of, checks: [...adopt.checks, ...found] };
+}
+
 /** PAGES, page one: adopt, with tails that are far off for what must not get worse. */
-export const farFromNormal: ReportInputs = {
-  ...adopt,
-  effects,
-  checks: [...adopt.checks, ...checks(adopt.plan, adopt.reduction, figures).filter(({ id }) => ofThese.includes(id))],
-};
+export const farFromNormal: ReportInputs = judged(effects);
+
+/** The same where the corrected interval counts. */
+export const farAndCorrected: ReportInputs = judged(
+  effects.map((effect) =>
+    effect.normality?.tails.level === "strong" && effect.normality.other !== null
+      ? { ...effect, contrast: effect.normality.other, normality: { ...effect.normality, other: effect.contrast } }
+      : effect,
+  ),
+);

@@ -6,7 +6,7 @@ import { renderReport } from "../../src/report/index.ts";
 import { histogram } from "../../src/stats/histogram.ts";
 import { isNotDrawn } from "../../src/stats/index.ts";
 import { undecidable } from "./cases.ts";
-import { farFromNormal } from "./drawn.ts";
+import { farAndCorrected, farFromNormal } from "./drawn.ts";
 import { sectionOf, textOf } from "./markup.ts";
 
 const label = (value: number) => String(value);
@@ -134,6 +134,15 @@ describe("page one", () => {
     expect(first).toMatch(
       /what matters most: Support contacts: one visitor with .* holds 31\.0% of its group’s spread \(of the sum of squares about the mean\), so no interval for it can be relied on\. Support contacts: the nominal 2\.5% tails are about 7\.1% \(the interval wholly below the truth\) and 0\.40% \(wholly above\), off by more than half\. The corrected interval is 4\.1% fewer to 6\.0% more, the normal one 6\.1% fewer to 3\.9% more; the conclusion changes: by the corrected one, not settled\./,
     );
+  });
+
+  it("says once that the corrected interval counts", async () => {
+    const { html } = await renderReport(farAndCorrected);
+    const first = textOf(sectionOf(html, "decision"));
+    expect(first).toContain(
+      "off by more than half. The corrected interval counts, 4.1% fewer to 6.0% more, the normal one is",
+    );
+    expect(textOf(sectionOf(html, "trust"))).toContain("The corrected interval counts here.");
   });
 
   it("gives no corrected interval where nothing can be decided, and section 5 speaks of no conclusion", async () => {

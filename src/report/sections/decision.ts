@@ -1,4 +1,4 @@
-import type { Check } from "../../checks/types.ts";
+import { type Check, CORRECTED_COUNTS } from "../../checks/index.ts";
 import {
   askedSentence,
   type Conclusion,
@@ -105,7 +105,10 @@ function trustText(inputs: ReportInputs): string {
   const told = conclusion.decision === "undecidable" ? open.filter((check) => check.result !== "fail") : open;
   const worst = mostImportant(told);
   if (worst === null) return `${tally}.`;
-  const sentence = [worst, ...farFromNormal(told, worst)].map((check) => check.sentence + afterwards(check, inputs));
+  const sentence = [worst, ...farFromNormal(told, worst)].map((check) => {
+    const other = otherInterval(check, inputs);
+    return other === null ? check.sentence : `${check.sentence.replace(` ${CORRECTED_COUNTS}`, "")} ${other}`;
+  });
   return told.length === 1 ? `${tally}: ${sentence.join(" ")}` : `${tally}; what matters most: ${sentence.join(" ")}`;
 }
 
@@ -114,13 +117,12 @@ function farFromNormal(checks: readonly Check[], told: Check): Check[] {
   return checks.filter((check) => check.id === "normality" && check.strong && check !== told);
 }
 
-/** Of tails that are far off, what the other interval says; nothing where no estimate may stand on the page. */
-function afterwards(check: Check, { plan, effects, conclusion }: ReportInputs): string {
-  if (check.id !== "normality" || !check.strong || conclusion.decision === "undecidable") return "";
+/** Of tails that are far off, which interval counts and what the other says; null where no estimate may stand on the page. */
+function otherInterval(check: Check, { plan, effects, conclusion }: ReportInputs): string | null {
+  if (check.id !== "normality" || !check.strong || conclusion.decision === "undecidable") return null;
   const part = check.parts.find(({ sentence }) => sentence === check.sentence);
   const effect = effects.find(({ metric, variant }) => metric === part?.about && variant === part?.figures.variant);
-  const sentence = effect === undefined ? null : otherIntervalSentence(effect, plan, effects);
-  return sentence === null ? "" : ` ${sentence}`;
+  return effect === undefined ? null : otherIntervalSentence(effect, plan, effects);
 }
 
 function countedText({ plan, reduction }: ReportInputs): string {
