@@ -109,24 +109,6 @@ export function aboveCaps(x: Statement, caps: readonly string[], dialect: Dialec
   return { bucket: sql`CASE ${join(cases, "\n")} END`, units: sql`(analysed AND ${above(lowest)})` };
 }
 
-/** A value of which `above` others are asked that exceed or equal it, if it is no smaller than a bound. */
-export interface FromTop {
-  readonly x: Statement;
-  readonly bound: string;
-  readonly above: bigint;
-}
-
-/** Gives place (of what was asked), x; no row where there is none. */
-export function valuesFromTop(asked: readonly FromTop[], dialect: Dialect): Statement {
-  return eachInOrder(
-    asked.map(({ x, bound, above }) => ({
-      values: sql`SELECT ${x} AS x FROM units WHERE ${x} >= CAST(${bound} AS ${dialect.sumType})`,
-      order: sql`x DESC`,
-      offset: above,
-    })),
-  );
-}
-
 /** Two values over the same units; a unit without y has no x. Partial: some units have y alone. */
 export interface Pair {
   readonly y: Measured;
@@ -210,30 +192,6 @@ function twoIntegers(t: Statement, suffix: string): Statement[] {
   ];
 }
 
-/** A pair (y, x) of each unit, and the key by which its arm's ends are found: at some value of it a variant. */
-export interface KeyedPair {
-  readonly key: Statement;
-  readonly y: Statement;
-  readonly x: Statement;
-  readonly ends: readonly { readonly variant: number; readonly end: number; readonly at: Statement }[];
-}
-
-/** The pair of the unit at each end, of several the smallest pair. Gives part (place of the pair), variant, end, y, x. */
-export function pairsAtEnds(pairs: readonly KeyedPair[]): Statement {
-  const parts = pairs.flatMap(({ key, y, x, ends }, part) =>
-    [...new Set(ends.map(({ end }) => end))].map((end) => {
-      const own = ends.filter((one) => one.end === end);
-      const cases = own.map(({ variant, at }) => sql`WHEN ${variant} THEN ${at}`);
-      return sql`
-        SELECT ${part} AS part, variant, ${end} AS end_of, min({'y': y, 'x': x}) AS pair
-        FROM (SELECT variant, ${key} AS key, ${y} AS y, ${x} AS x FROM units)
-        WHERE key = CASE variant ${join(cases, "\n")} END
-        GROUP BY variant`;
-    }),
-  );
-  return sql`SELECT part, variant, end_of, pair.y AS y, pair.x AS x FROM (${join(parts, "\nUNION ALL\n")})`;
-}
-
 /** Powers by repeated multiplication, left to right: ((u u) u) u. */
 function product(factors: readonly Statement[]): Statement {
   const [first, ...rest] = factors;
@@ -267,29 +225,6 @@ export const capped = (x: Statement, cap: string | null, dialect: Dialect): Stat
   cap === null
     ? x
     : sql`CASE WHEN ${x} > CAST(${cap} AS ${dialect.sumType}) THEN CAST(${cap} AS ${dialect.sumType}) ELSE ${x} END`;
-
-/** The values at some ranks, each from the nearer end. Gives place (of what was asked), x. */
-export function atEachRank(
-  asked: readonly { readonly x: Statement; readonly rank: bigint; readonly n: bigint }[],
-): Statement {
-  return eachInOrder(
-    asked.map(({ x, rank, n }) => ({
-      values: sql`SELECT ${x} AS x FROM units WHERE ${x} IS NOT NULL`,
-      order: rank * 2n > n ? sql`x DESC` : sql`x`,
-      offset: rank * 2n > n ? n - rank : rank - 1n,
-    })),
-  );
-}
-
-function eachInOrder(
-  asked: readonly { readonly values: Statement; readonly order: Statement; readonly offset: bigint }[],
-): Statement {
-  const places = asked.map(
-    ({ values, order, offset }, place) =>
-      sql`SELECT ${place} AS place, x FROM (${values} ORDER BY ${order} LIMIT 1 OFFSET ${offset})`,
-  );
-  return join(places, "\nUNION ALL\n");
-}
 
 /**
  * Units per variant, those without a value, those whose value is not 0, and those above a cap.

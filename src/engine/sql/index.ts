@@ -4,6 +4,8 @@ export * from "./cells.ts";
 /** What differs by engine. */
 export { type Dialect, duckdb, localDay, valueList } from "./dialect.ts";
 export { copies, copyCounts, markDuplicates } from "./duplicates.ts";
+/** The units at the ends of arms. */
+export { pairsAtEnds } from "./ends.ts";
 export { atEnrolment, type EnrolmentKey, enrolmentKey, enrolments, needsEnrollingRow, seen } from "./enrolments.ts";
 /** Hours. */
 export { rowsByHour, rowsOfUnits, type TimeSpan, unitsInRuns } from "./hours.ts";
@@ -14,7 +16,7 @@ export * from "./levels.ts";
 export { matched, PLACE, placeOf } from "./matched.ts";
 export { countedRows, metricRows } from "./metricRows.ts";
 /** Order statistics. */
-export { atRanks, ordered } from "./ordered.ts";
+export { atEachRank, atRanks, ordered, valuesFromTop } from "./ordered.ts";
 /** The stages, in order. */
 export { brokenQuotes, linesWithSurplus, listTable } from "./read.ts";
 export { forgetRows, REASON, rejectedOrdinals, rows, unreadableRows } from "./rows.ts";

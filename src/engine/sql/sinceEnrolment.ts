@@ -16,7 +16,7 @@ export interface DailyPart {
  * Stage 12: what each analysed unit that was followed to the end did on each day since its enrolment, days of 24 hours.
  * Reads   matched, enrolments
  * Writes  by_day: id (the enrolments' rowid), variant, day (0, 1, ...), d<p>, the part's value of that day alone
- * A day on which a unit has no row that counts has no row here either, which stands for zeros. Under a cap d<p> is what the
+ * A day on which a unit has no row that counts has no row here either, or no value, which stands for zeros. Under a cap d<p> is what the
  * day adds to the unit's capped value, so that the days add up to that.
  */
 export function byDay(
@@ -31,7 +31,7 @@ export function byDay(
   const laidOut = parts.map(({ part, cap }) => ({ part, cap, of: layoutOf(layout, part) }));
   const counts = [...new Set(laidOut.map(({ of }) => of.match))].map((match) => name(`m${match}`));
   const values = laidOut.map(
-    ({ part, of }) => sql`CAST(${dayValue(plan, of)} AS ${dialect.sumType}) AS ${name(`d${part}`)}`,
+    ({ part, of }) => sql`CAST(${ofCounted(plan, of)} AS ${dialect.sumType}) AS ${name(`d${part}`)}`,
   );
   const capped = laidOut.map(({ part, cap }) =>
     cap === null ? name(`d${part}`) : sql`${addedUnder(name(`d${part}`), cap, dialect)} AS ${name(`d${part}`)}`,
@@ -114,6 +114,14 @@ function layoutOf(layout: Layout, part: number): PartLayout {
   return found;
 }
 
+/** Where units without rows are left out, a day has no value either unless some row of the metric counts on it. */
+function ofCounted(plan: Plan, of: PartLayout): Statement {
+  const value = dayValue(plan, of);
+  return plan.metrics[of.metric]?.withoutRows === "leave-out"
+    ? sql`CASE WHEN bool_or(${name(`m${of.match}`)}) THEN ${value} END`
+    : value;
+}
+
 /** Of a share, and of days, whether there was a row; else the number of rows or their sum. */
 function dayValue(plan: Plan, { metric, match, part, value }: PartLayout): Statement {
   const counted = name(`m${match}`);
@@ -127,7 +135,9 @@ function dayValue(plan: Plan, { metric, match, part, value }: PartLayout): State
 function addedUnder(value: Statement, cap: string, dialect: Dialect): Statement {
   const most = sql`CAST(${cap} AS ${dialect.sumType})`;
   const soFar = sql`CAST(sum(${value}) OVER (PARTITION BY id ORDER BY day) AS ${dialect.sumType})`;
-  return sql`CAST(least(${most}, ${soFar}) - least(${most}, ${soFar} - ${value}) AS ${dialect.sumType})`;
+  // The lesser of a cap and nothing would be the cap.
+  const added = sql`least(${most}, ${soFar}) - least(${most}, ${soFar} - ${value})`;
+  return sql`CAST(CASE WHEN ${value} IS NOT NULL THEN ${added} END AS ${dialect.sumType})`;
 }
 
 const list = (items: readonly Statement[]) => join(items, ", ");
