@@ -29,7 +29,8 @@ export async function withDrawers<Of>(
   const draws = toDraw.reduce((sum, of) => sum + (of?.draws ?? 0), 0);
   if (draws < MANY || threads < 2 || !existsSync(WORKER)) return use(resampled);
   const most = Math.min(threads, Math.floor(draws / FOR_A_THREAD));
-  const pool = new Tinypool({ filename: WORKER.href, minThreads: most, maxThreads: most });
+  // A loader that this program was started with has nothing to do there, and would be started once more in each.
+  const pool = new Tinypool({ filename: WORKER.href, minThreads: most, maxThreads: most, execArgv: [] });
   // One listener for all that is drawn: a signal warns of more than ten.
   const stop = () => void pool.destroy();
   signal?.addEventListener("abort", stop);
