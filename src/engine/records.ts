@@ -7,6 +7,8 @@ export interface RawRecord {
   /** Physical line on which the record starts, from 1. */
   readonly line: number;
   readonly text: string;
+  /** How many cells it has; null where `cells` is. */
+  readonly width: number | null;
   /**
    * Null when the record cannot be cut into cells: a quoted cell that goes on after its closing quote, or never ends. Such
    * a quote may have swallowed rows, so each line of it stands as a record of its own.
@@ -32,35 +34,83 @@ export function unlessEndless(cause: unknown): null {
  * @throws EndlessRecord when one goes on for more than LONGEST_RECORD characters
  */
 export async function* records(chunks: AsyncIterable<string>, delimiter: string): AsyncGenerator<RawRecord> {
+  for await (const batch of recordBatches(chunks, delimiter)) yield* batch;
+}
+
+/** The same by pieces: for files of many million records, of which each would have to be waited for. */
+export async function* recordBatches(chunks: AsyncIterable<string>, delimiter: string): AsyncGenerator<RawRecord[]> {
   let rest = "";
   let line = 1;
   let first = true;
   for await (const chunk of chunks) {
     rest += first ? chunk.replace(/^\uFEFF/, "") : chunk;
     if (chunk.length > 0) first = false;
+    const batch: RawRecord[] = [];
+    const [quotes, feeds, returns] = [finder(rest, '"'), finder(rest, "\n"), finder(rest, "\r")];
     let from = 0;
     for (;;) {
-      const end = recordEnd(rest, from, delimiter);
+      const lineEnd = Math.min(feeds(from), returns(from));
+      const isPlain = quotes(from) > lineEnd;
+      const end = isPlain ? plainEnd(rest, lineEnd) : recordEnd(rest, from, delimiter);
       // A record may go on in the next piece, and so may a line end that is cut between its two characters.
       if (end === null || (rest[end.next - 1] === "\r" && end.next === rest.length)) break;
       const text = rest.slice(from, end.at);
-      if (text !== "") yield* cut(text, line, delimiter);
-      line += lines(rest.slice(from, end.next));
+      if (text !== "") batch.push(...(isPlain ? [plain(text, line, delimiter)] : cut(text, line, delimiter)));
+      line += isPlain ? 1 : lines(rest.slice(from, end.next));
       from = end.next;
     }
     rest = rest.slice(from);
+    if (batch.length > 0) yield batch;
     if (rest.length > LONGEST_RECORD)
       throw new EndlessRecord(`the record on line ${line} does not end; look for a quote that does not close`);
   }
   const last = rest.endsWith("\r") ? rest.slice(0, -1) : rest;
-  if (last !== "") yield* cut(last, line, delimiter);
+  if (last !== "") yield cut(last, line, delimiter);
 }
 
-function* cut(text: string, line: number, delimiter: string): Generator<RawRecord> {
+/** Where a sign stands next, at or behind a place that only goes forward; behind the text if nowhere. */
+function finder(text: string, sign: string): (from: number) => number {
+  let next = -1;
+  return (from) => {
+    if (next < from) {
+      const found = text.indexOf(sign, from);
+      next = found < 0 ? text.length : found;
+    }
+    return next;
+  };
+}
+
+/** Of a record without a quote; null: it goes on. */
+function plainEnd(text: string, at: number): { readonly at: number; readonly next: number } | null {
+  if (at === text.length) return null;
+  return { at, next: text[at] === "\r" && text[at + 1] === "\n" ? at + 2 : at + 1 };
+}
+
+/** A record without a quote, which is cut when its cells are asked for. */
+function plain(text: string, line: number, delimiter: string): RawRecord {
+  return {
+    line,
+    text,
+    width: countOf(text, delimiter) + 1,
+    get cells() {
+      return text.split(delimiter);
+    },
+  };
+}
+
+function countOf(text: string, sign: string): number {
+  const code = sign.charCodeAt(0);
+  let found = 0;
+  for (let at = 0; at < text.length; at++) if (text.charCodeAt(at) === code) found += 1;
+  return found;
+}
+
+function cut(text: string, line: number, delimiter: string): RawRecord[] {
   const found = cells(text, delimiter);
-  if (found !== null) return yield { line, text, cells: found };
-  for (const [i, own] of text.split(/\r\n|\r|\n/).entries())
-    if (own !== "") yield { line: line + i, text: own, cells: null };
+  if (found !== null) return [{ line, text, width: found.length, cells: found }];
+  return text
+    .split(/\r\n|\r|\n/)
+    .flatMap((own, i) => (own === "" ? [] : [{ line: line + i, text: own, width: null, cells: null }]));
 }
 
 /**
@@ -91,9 +141,6 @@ export function cells(record: string, delimiter: string): string[] | null {
 
 /** A cell as RFC 4180 writes it in quotes. */
 export const quoted = (cell: string): string => `"${cell.replaceAll('"', '""')}"`;
-
-/** Whether a record fits a header: it has as many cells. */
-export const fits = ({ cells }: RawRecord, width: number): boolean => cells !== null && cells.length === width;
 
 /** Where the record that starts at `from` ends: outside quotes, at LF, CR LF or CR. Null: it goes on. */
 function recordEnd(text: string, from: number, delimiter: string): { at: number; next: number } | null {

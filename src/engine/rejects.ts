@@ -6,7 +6,7 @@ import { count, type Engine, text } from "./engine.ts";
 import type { LogFile } from "./files.ts";
 import type { Layout } from "./layout.ts";
 import { reasonText } from "./ledger.ts";
-import { delimiterOf, fits, quoted, records, unlessEndless } from "./records.ts";
+import { delimiterOf, quoted, recordBatches, unlessEndless } from "./records.ts";
 import type { FileGroup } from "./source.ts";
 import { type Dialect, REASON, rejectedOrdinals, rejectedTexts, rejectsByFile, sql } from "./sql/index.ts";
 import type { Step } from "./zone.ts";
@@ -109,20 +109,20 @@ async function placedRows(
   const found: Rejected[] = [];
   let isHeader = true;
   let ordinal = 0;
-  const delimiter = delimiterOf(file.format);
-  for await (const record of records(textOf(file.path), delimiter)) {
-    const { line, text } = record;
-    if (isHeader) {
-      isHeader = false;
-    } else if (hasBrokenText && text.includes("\uFFFD")) {
-      // Bytes that are no UTF-8 are decoded to this sign.
-      found.push({ line, reason: REASON.notText, text });
-    } else if (!fits(record, group.columns.length)) {
-      found.push({ line, reason: REASON.unreadable, isSpoilt: record.cells === null, text });
-    } else {
-      ordinal += 1;
-      const reason = reasons.get(ordinal);
-      if (reason !== undefined) found.push({ line, reason, text });
+  for await (const batch of recordBatches(textOf(file.path), delimiterOf(file.format))) {
+    for (const { line, text, width } of batch) {
+      if (isHeader) {
+        isHeader = false;
+      } else if (hasBrokenText && text.includes("\uFFFD")) {
+        // Bytes that are no UTF-8 are decoded to this sign.
+        found.push({ line, reason: REASON.notText, text });
+      } else if (width !== group.columns.length) {
+        found.push({ line, reason: REASON.unreadable, isSpoilt: width === null, text });
+      } else {
+        ordinal += 1;
+        const reason = reasons.get(ordinal);
+        if (reason !== undefined) found.push({ line, reason, text });
+      }
     }
   }
   return found;

@@ -11,14 +11,19 @@ async function* pieces(text: string, cuts: readonly number[]): AsyncGenerator<st
   yield text.slice(from);
 }
 
-async function recordsOf(text: string, cuts: readonly number[] = [], delimiter = ","): Promise<RawRecord[]> {
-  const found: RawRecord[] = [];
-  for await (const record of records(pieces(text, cuts), delimiter)) found.push(record);
+type Shown = Omit<RawRecord, "width">;
+
+async function recordsOf(text: string, cuts: readonly number[] = [], delimiter = ","): Promise<Shown[]> {
+  const found: Shown[] = [];
+  for await (const { line, text: own, width, cells: all } of records(pieces(text, cuts), delimiter)) {
+    expect(width).toBe(all?.length ?? null);
+    found.push({ line, text: own, cells: all });
+  }
   return found;
 }
 
 /** The text is cut into records alike wherever its pieces end. */
-async function recordsOfAnyPieces(text: string, delimiter = ","): Promise<RawRecord[]> {
+async function recordsOfAnyPieces(text: string, delimiter = ","): Promise<Shown[]> {
   const whole = await recordsOf(text, [], delimiter);
   for (let cut = 0; cut <= text.length; cut++) {
     expect(await recordsOf(text, [cut], delimiter), `cut at ${cut}`).toEqual(whole);
