@@ -2,8 +2,9 @@
 
 export { isFile, logFiles } from "./files.ts";
 export { unitLineIds } from "./layout.ts";
-export { type Progress, type ReduceOptions, reduce, withReduction } from "./reduce.ts";
+export { reduce, withReduction } from "./reduce.ts";
 export type { AdjustedRequest, Session } from "./session.ts";
 export { type NoSuchUnit, type TracedRow, traceUnit, type UnitTrace } from "./trace.ts";
 export type * from "./types.ts";
 export { UnusableLog } from "./unusable.ts";
+export type { Progress, ReduceOptions } from "./withLog.ts";

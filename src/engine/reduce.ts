@@ -1,58 +1,21 @@
-import { mkdtemp, rm } from "node:fs/promises";
-import os from "node:os";
-import path from "node:path";
-import { logProblems, noSuchList, type Plan, type PlanSource, type Problem } from "../plan/index.ts";
-import { openDuckdb } from "./duckdb.ts";
+import type { Plan, PlanSource, Problem } from "../plan/index.ts";
 import { type Engine, wholeOrNull } from "./engine.ts";
-import { isFile, neighbours } from "./files.ts";
-import { type Layout, layout as layoutOf, unitLineIds } from "./layout.ts";
-import { facts, ledger, rowsPerFile } from "./ledger.ts";
+import { enrolUnits } from "./enrolUnits.ts";
+import { type Layout, unitLineIds } from "./layout.ts";
+import { facts, ledger } from "./ledger.ts";
 import { levels } from "./levels.ts";
-import { readLists } from "./lists.ts";
-import { logEnd } from "./logEnd.ts";
 import { metricLedgers, refuseOtherCounts } from "./metricLedger.ts";
 import { type MetricValue, metricCells, metricValues } from "./metrics.ts";
-import { type OpenLog, openLog } from "./open.ts";
-import { inputFingerprints, readRows, refuseChanged, refuseWithoutRows } from "./readRows.ts";
+import { refuseChanged } from "./readRows.ts";
 import { writeRejects } from "./rejects.ts";
-import { hoursOfLog, hoursOfUnits } from "./rowsByHour.ts";
+import { hoursOfUnits } from "./rowsByHour.ts";
 import { openSession, type Session } from "./session.ts";
 import { sinceEnrolment } from "./sinceEnrolment.ts";
 import { soundness } from "./soundness.ts";
-import {
-  atEnrolment,
-  candidates,
-  copies,
-  type Dialect,
-  duckdb,
-  enrolmentKey,
-  enrolmentRange,
-  enrolments,
-  markDuplicates,
-  matched,
-  name,
-  needsEnrollingRow,
-  seen,
-  timeRange,
-  units,
-} from "./sql/index.ts";
+import { candidates, type Dialect, duckdb, enrolmentRange, matched, name, units } from "./sql/index.ts";
 import type { Reduction } from "./types.ts";
-import { type DayRun, dayAt, dayRuns, offsetsByLocalTime, type Step } from "./zone.ts";
-
-export interface ReduceOptions {
-  readonly threads?: number | undefined;
-  readonly memory?: string | undefined;
-  /** Where rejects.csv is to be written; nowhere without it. */
-  readonly rejectsTo?: string | undefined;
-  readonly progress?: ((progress: Progress) => void) | undefined;
-  readonly signal?: AbortSignal | undefined;
-}
-export interface Progress {
-  readonly stage: string;
-  readonly rows: number;
-  /** Of the whole work, roughly; null: not known. */
-  readonly share: number | null;
-}
+import { type Opened, type ReduceOptions, withLog } from "./withLog.ts";
+import { type DayRun, dayAt, dayRuns, type Step } from "./zone.ts";
 
 /** The reduction of a log, without what can be asked afterwards. */
 export const reduce = (planned: Plan | null, source: PlanSource, folder: string, options: ReduceOptions = {}) =>
@@ -76,105 +39,6 @@ export function withReduction<T>(
     const { reduction, values } = await stages(plan, folder, opened, duckdb, options);
     return use(plan, reduction, openSession(plan, values, opened.engine, duckdb));
   });
-}
-
-/** An opened log, and the engine to read it with. */
-export interface Opened {
-  readonly log: OpenLog;
-  readonly engine: Engine;
-  /** For what is gone afterwards. */
-  readonly workFolder: string;
-}
-
-/** Opens a plan's log, uses it and tidies up. @returns what `use` gives, or what is wrong between plan and log */
-export async function withLog<T>(
-  planned: Plan | null,
-  source: PlanSource,
-  folder: string,
-  options: ReduceOptions,
-  use: (plan: Plan, opened: Opened) => Promise<T>,
-): Promise<T | { problems: readonly Problem[] }> {
-  const workFolder = await mkdtemp(path.join(os.tmpdir(), "closeout-"));
-  const engine = await openDuckdb({ threads: options.threads, memory: options.memory, workFolder });
-  const stop = () => engine.interrupt();
-  options.signal?.addEventListener("abort", stop);
-  try {
-    const log = await openLog(source, folder, engine, workFolder);
-    const problems = [...log.problems, ...logProblems(source, log.found), ...(await missingLists(source, folder))];
-    if (planned === null || problems.length > 0) return { problems };
-    return await use(planned, { log, engine, workFolder });
-  } finally {
-    options.signal?.removeEventListener("abort", stop);
-    engine.close();
-    await rm(workFolder, { recursive: true, force: true });
-  }
-}
-
-/** Stages 1 to 6: the rows read, their duplicates marked, and the units enrolled. */
-export async function enrolUnits(
-  plan: Plan,
-  folder: string,
-  { log, engine, workFolder }: Opened,
-  dialect: Dialect,
-  options: ReduceOptions,
-) {
-  const layout = layoutOf(plan, log.groups);
-  let rowsRead = 0;
-  const stage = (name: string, share: number) => {
-    options.signal?.throwIfAborted();
-    options.progress?.({ stage: name, rows: rowsRead, share });
-  };
-  stage("reading the log", 0);
-  const prints = inputFingerprints(log);
-  const fingerprints = Promise.all(prints);
-  // A failure is met where it is awaited; until then it must not count as unhandled.
-  fingerprints.catch(() => undefined);
-  const zone = offsetsByLocalTime(plan.timezone);
-  const groups = await readRows(plan, layout, log, zone, workFolder, engine, dialect, prints, options.signal);
-  // A file that ends early is the cause, the missing rows are what comes of it: so the cause is told first.
-  await refuseWithoutRows(log, layout, engine).catch(async (error: unknown) => {
-    await fingerprints;
-    throw error;
-  });
-  const perFile = await rowsPerFile(log.files.length, engine);
-  rowsRead = perFile.reduce((sum, n) => sum + n, 0);
-  const lists = await readLists(plan, layout, folder, workFolder, engine);
-
-  if (layout.hasEventId) {
-    stage("looking for duplicates", 0.5);
-    await engine.run(copies(layout, dialect));
-    await engine.run(markDuplicates());
-  }
-  stage("enrolling units", 0.65);
-  const [range = {}] = await engine.query(timeRange());
-  const firstUs = wholeOrNull(range, "first_us");
-  const lastUs = wholeOrNull(range, "last_us");
-  const span = {
-    firstUs: wholeOrNull(range, "first_of_all_us") ?? 0n,
-    lastUs: wholeOrNull(range, "last_of_all_us") ?? 0n,
-  };
-  const { spans, hours } = layout.hasTime ? await hoursOfLog(layout, span, engine) : { spans: [], hours: [] };
-  const logEndUs = logEnd(spans);
-  const key = enrolmentKey(plan, firstUs, lastUs);
-  await engine.run(seen(plan, layout, key));
-  if (needsEnrollingRow(layout)) await engine.run(atEnrolment(layout, key));
-  await engine.run(enrolments(plan, layout, key, logEndUs));
-  return {
-    layout,
-    zone,
-    groups,
-    lists,
-    perFile,
-    fingerprints,
-    firstUs,
-    lastUs,
-    span,
-    spans,
-    hours,
-    key,
-    logEndUs,
-    stage,
-  };
 }
 
 async function stages(
@@ -267,13 +131,4 @@ async function firstEnrolmentDay(
   const [range = {}] = await engine.query(enrolmentRange(unitLineIds(plan).length - 1));
   const firstUs = wholeOrNull(range, "first_us");
   return firstUs === null ? null : dayAt(firstUs, days);
-}
-
-async function missingLists(source: PlanSource, folder: string): Promise<Problem[]> {
-  const problems = await Promise.all(
-    source.lists.map(async ({ filter, file }) =>
-      (await isFile(path.resolve(folder, file))) ? [] : [noSuchList(filter, file, await neighbours(file, folder))],
-    ),
-  );
-  return problems.flat();
 }

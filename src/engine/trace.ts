@@ -1,9 +1,10 @@
 import type { Plan, PlanSource, Problem } from "../plan/index.ts";
 import { count, type Engine, nano, type Row, text, textOrNull, whole, wholeOrNull } from "./engine.ts";
+import { enrolUnits } from "./enrolUnits.ts";
 import { FATE, type Layout, unitLineIds } from "./layout.ts";
 import { reasonText, rowLineId } from "./ledger.ts";
-import { enrolUnits, type ReduceOptions, withLog } from "./reduce.ts";
 import { duckdb, nearestUnit, PLACE, rowsOfUnit, unitEnd } from "./sql/index.ts";
+import { type ReduceOptions, withLog } from "./withLog.ts";
 
 /** All that became of one unit: for the terminal, never for a file. */
 export interface UnitTrace {
