@@ -1,5 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
-import { type AxisWords, framed, type Layer, type Places, pixels, placesOf, type Range, rangeOf } from "./frame.ts";
+import { type AxisWords, framed, type Places, placesOf, type Range, rangeOf } from "./frame.ts";
+import { type Layer, pixels } from "./pixels.ts";
 import { theme } from "./theme.ts";
 
 /** The effect when so many units were in; an end without a limit is null. */

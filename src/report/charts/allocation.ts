@@ -1,5 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
-import { type AxisWords, framed, type Layer, pixels, placesOf, rangeOf } from "./frame.ts";
+import { type AxisWords, framed, placesOf, rangeOf } from "./frame.ts";
+import { type Layer, pixels } from "./pixels.ts";
 import { theme } from "./theme.ts";
 
 /** One variant's share of the units that enrolled on a day, and between what chance alone holds it. */

@@ -1,6 +1,7 @@
 import type { TopLevelSpec } from "vega-lite";
 import type { Interval } from "../../words/index.ts";
-import { type ForestAxis, type ForestRow, forestAxis, forestStrip, type Layer, upright } from "./forest.ts";
+import { type ForestAxis, type ForestRow, forestAxis, forestStrip, upright } from "./forest.ts";
+import type { Layer } from "./pixels.ts";
 import { theme } from "./theme.ts";
 
 /** One choice of the figure: its interval, and whether it is the plan's own. */

@@ -1,5 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
-import { type AxisWords, framed, pixels, placesOf, rangeOf } from "./frame.ts";
+import { type AxisWords, framed, placesOf, rangeOf } from "./frame.ts";
+import { pixels } from "./pixels.ts";
 import { theme } from "./theme.ts";
 
 /** The effect on one day since enrolment; an end without a limit is null. */

@@ -1,6 +1,6 @@
 import type { TopLevelSpec } from "vega-lite";
 import type { Relative } from "../../stats/types.ts";
-import { pixels } from "./frame.ts";
+import { type Layer, pixels } from "./pixels.ts";
 import { type LineStyle, theme } from "./theme.ts";
 import { roundTicks } from "./ticks.ts";
 
@@ -20,8 +20,6 @@ export interface ForestAxis {
   readonly high: number;
   readonly ticks: readonly number[];
 }
-
-export type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
 
 const WIDTH = 300;
 /** Far taller than a row: the row's cell cuts it, so that the zero line runs through whatever the row's height. */

@@ -1,9 +1,9 @@
 import type { TopLevelSpec } from "vega-lite";
+import { type Layer, pixels } from "./pixels.ts";
 import { theme } from "./theme.ts";
 import { roundTicks } from "./ticks.ts";
 
 /** A drawing of figures over two axes; its places are pixels, so that axis and marks cannot disagree. */
-export type Layer = Extract<TopLevelSpec, { layer: unknown }>["layer"][number];
 
 /** A narrow screen shows it at its own size, so that its letters stay legible. */
 const WIDTH = 340;
@@ -92,9 +92,6 @@ function within(x: number, text: string): { readonly x: number; readonly text: s
   const half = (text.length * LETTER) / 2;
   return { x: Math.min(x, WIDTH - half), text };
 }
-
-/** A field of the data that holds a place. */
-export const pixels = (field: string) => ({ field, type: "quantitative", scale: null, axis: null }) as const;
 
 type Stroke = Readonly<Record<"x" | "y" | "toX" | "toY", number>>;
 

@@ -20,7 +20,8 @@ export function inPixels(width: number, height: number, layer: Layer[]): TopLeve
   };
 }
 
-const pixels = (field: string) => ({ field, type: "quantitative", scale: null, axis: null }) as const;
+/** A field of the data that holds a place. */
+export const pixels = (field: string) => ({ field, type: "quantitative", scale: null, axis: null }) as const;
 
 /** Filled from each point down to its base; points of one group are one area. */
 export function area(points: readonly Point[], opacity = 0.6): Layer {

@@ -44,7 +44,7 @@ export interface EffectRow {
   readonly beside: readonly string[];
 }
 
-export const METHOD: Readonly<Record<Method, string>> = {
+const METHOD: Readonly<Record<Method, string>> = {
   normal: "normal",
   welch: "Welch\u2019s t",
   score: "score",
